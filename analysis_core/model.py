@@ -1,0 +1,418 @@
+"""The line model: joints, members, supports, actions, cases and combinations.
+
+Frozen; a changed model is a new model (``dataclasses.replace``).  Inside: metres, newtons,
+newton-metres, radians, kelvin, unmarked.
+
+Sign convention, stated once for the whole program
+---------------------------------------------------
+A line or frame lies in a vertical plane, seen so that its horizontal axis ``x`` runs left to
+right; ``z`` is up::
+
+      z                      member from start to end:   t = (cos a, sin a)
+      ^    down = local n    its local "down" direction:  n = (sin a, -cos a)
+      |     |                (t turned clockwise by a right angle)
+      +-----|--> x
+            v                clockwise is positive for rotations, couples and end moments
+
+* Actions and deflections: positive downward; across an inclined member along ``n``.
+* Reactions: vertical positive upward, horizontal positive to the right, moment clockwise,
+  all acting on the line.
+* End moments: acting on the member, clockwise positive.  Diagram moment (sagging positive,
+  tension on the ``n`` side) at the start = end moment at the start, at the end = minus it.
+* Shear: positive where the part to the left (towards the start) is pushed up.
+* Axial force: tension positive.
+
+Everything is checked once, when a ``Line`` is built; the solver trusts its input.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Literal
+
+from analysis_core.errors import ModelError
+from analysis_core.findings import Finding
+
+Point = tuple[float, float, float]
+Role = Literal["span", "leg"]
+Kind = Literal["line", "frame"]
+Nature = Literal["permanent", "imposed", "snow", "wind", "temperature", "settlement", "other"]
+LimitState = Literal["strength", "serviceability"]
+
+RIGID = math.inf
+FREE = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class Section:
+    """Cross-section as read: SI units, y horizontal and z along the depth of the member.
+
+    ``inertia`` bends the member in its vertical plane (about the horizontal section axis),
+    ``inertia_lateral`` about the axis along the depth, ``inertia_product`` between the two
+    (not zero: the section does not bend in its plane alone).  ``shear_area`` goes with
+    ``inertia``; 0 where unknown.  ``dimensions`` keeps the profile's own measures by name, for
+    the member checks.  ``source`` says where the values came from.
+    """
+
+    name: str
+    shape: str
+    area: float
+    inertia: float
+    inertia_lateral: float = 0.0
+    inertia_product: float = 0.0
+    torsion: float = 0.0
+    shear_area: float = 0.0
+    depth: float = 0.0
+    width: float = 0.0
+    top: float = 0.0
+    """Distance from the centroid to the topmost fibre, m."""
+    dimensions: tuple[tuple[str, float], ...] = ()
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Material:
+    """Elastic moduli in Pa, density in kg/m³ (0 where unknown), strength by name in Pa."""
+
+    name: str
+    elastic_modulus: float
+    shear_modulus: float = 0.0
+    density: float = 0.0
+    thermal_expansion: float = 0.0
+    category: str = ""
+    """"steel", "concrete", "timber" or "" where it could not be told."""
+    strength: tuple[tuple[str, float], ...] = ()
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Piece:
+    """A stretch of a member along which the rigidity is one smooth function.
+
+    With ``u`` from 0 to 1 along the piece, the flexural rigidity is
+    ``(flexural[0] + flexural[1]*u + flexural[2]*u**2 + ...) ** power`` in N·m².  ``shear``
+    gives the shear rigidity (effective shear area times shear modulus, N) in the same way,
+    without the power; None: rigid in shear.
+    """
+
+    length: float
+    flexural: tuple[float, ...]
+    power: float = 1.0
+    shear: tuple[float, ...] | None = None
+
+    def flexural_at(self, u: float) -> float:
+        """Return the flexural rigidity in N·m² at ``u`` (0 to 1) along the piece."""
+        return float(sum(c * u**i for i, c in enumerate(self.flexural)) ** self.power)
+
+
+@dataclass(frozen=True, slots=True)
+class Support:
+    """Stiffness against each movement of a joint: RIGID (infinite), FREE (0) or N/m, N·m/rad."""
+
+    vertical: float = FREE
+    horizontal: float = FREE
+    rotation: float = FREE
+
+
+@dataclass(frozen=True, slots=True)
+class Joint:
+    """A point where members meet, end or are supported.
+
+    ``x``, ``z`` are coordinates in the plane of the line, ``point`` the same place in the world.
+    ``element`` is the GlobalId of the supporting element or point connection.  ``reason`` says
+    in a sentence how the support was decided, ``width`` is the width of the bearing along the
+    line (0 where unknown), ``elements`` further elements that meet here.
+    """
+
+    id: int
+    x: float
+    z: float
+    point: Point = (0.0, 0.0, 0.0)
+    support: Support | None = None
+    element: str | None = None
+    elements: tuple[str, ...] = ()
+    reason: str = ""
+    width: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class Member:
+    """A straight member between two joints, rigid axially.
+
+    ``start_spring`` and ``end_spring`` are the rotational stiffness of the connection between
+    the member's end and the joint: RIGID, FREE (a release) or N·m/rad.  ``span`` numbers the
+    spans of a line from 1, left to right; members of one span share the number; legs have none.
+    Position ``s`` on the member lies at ``element_offset + s`` from the start of ``element``, or
+    at ``element_offset - s`` where ``reversed_``.
+    """
+
+    id: int
+    start: int
+    end: int
+    pieces: tuple[Piece, ...]
+    role: Role = "span"
+    start_spring: float = RIGID
+    end_spring: float = RIGID
+    span: int | None = None
+    element: str = ""
+    element_offset: float = 0.0
+    reversed_: bool = False
+    section: Section | None = None
+    end_section: Section | None = None
+    material: Material | None = None
+
+    @property
+    def length(self) -> float:
+        """Length in m."""
+        return math.fsum(piece.length for piece in self.pieces)
+
+    @property
+    def flexural_rigidity(self) -> float:
+        """Flexural rigidity at the start in N·m²."""
+        return self.pieces[0].flexural_at(0.0)
+
+    @property
+    def prismatic(self) -> bool:
+        """Whether the rigidity is constant and the member is rigid in shear."""
+        first = self.pieces[0].flexural_at(0.0)
+        return all(
+            piece.shear is None and not any(piece.flexural[1:]) and piece.flexural_at(0.0) == first
+            for piece in self.pieces
+        )
+
+
+@dataclass(frozen=True, slots=True)
+class DistributedForce:
+    """Force per length of member from ``start`` to ``end`` (m from the member's start).
+
+    Intensity in N/m is a polynomial in ``v = s - start``: ``transverse[0] + transverse[1]*v + ...``
+    positive along the member's local down ``n``; ``axial`` likewise, positive from start to end.
+    """
+
+    case: str
+    member: int
+    start: float
+    end: float
+    transverse: tuple[float, ...] = ()
+    axial: tuple[float, ...] = ()
+    source: str = ""
+    """GlobalId of the action, or where it came from."""
+
+
+@dataclass(frozen=True, slots=True)
+class PointForce:
+    """Force in N at ``position`` (m from the member's start); directions as DistributedForce."""
+
+    case: str
+    member: int
+    position: float
+    transverse: float = 0.0
+    axial: float = 0.0
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class PointMoment:
+    """Couple in N·m at ``position``, clockwise positive."""
+
+    case: str
+    member: int
+    position: float
+    moment: float
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class ImposedCurvature:
+    """Curvature in 1/m that the member would take if free, from ``start`` to ``end``.
+
+    Positive where it makes the member sag.  Temperature: alpha * (bottom - top) / depth.
+    """
+
+    case: str
+    member: int
+    start: float
+    end: float
+    curvature: float
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class JointForce:
+    """Force on a joint: ``horizontal`` to the right, ``vertical`` down, ``moment`` clockwise."""
+
+    case: str
+    joint: int
+    horizontal: float = 0.0
+    vertical: float = 0.0
+    moment: float = 0.0
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class JointMovement:
+    """Prescribed movement of a support: right, down (settlement), clockwise; m and rad.
+
+    Where the support is a spring, the ground below the spring moves by this much.
+    """
+
+    case: str
+    joint: int
+    horizontal: float = 0.0
+    vertical: float = 0.0
+    rotation: float = 0.0
+    source: str = ""
+
+
+MemberAction = DistributedForce | PointForce | PointMoment | ImposedCurvature
+JointAction = JointForce | JointMovement
+Action = MemberAction | JointAction
+
+
+@dataclass(frozen=True, slots=True)
+class Case:
+    """A load case.  ``category`` refines the nature (an imposed-load category, say)."""
+
+    name: str
+    nature: Nature = "other"
+    category: str = ""
+    global_id: str = ""
+    source: str = ""
+    """How the nature was settled: from the model, the job file, or a stated default."""
+
+
+@dataclass(frozen=True, slots=True)
+class Combination:
+    """Factors by case name.  ``rule`` names the clause; ``kind`` refines the limit state."""
+
+    name: str
+    limit_state: LimitState
+    factors: Mapping[str, float]
+    kind: str = ""
+    rule: str = ""
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Line:
+    """A beam line (``kind`` "line") or a plane frame ("frame"), ready to be solved.
+
+    Joint ids index ``joints``, member ids index ``members``.  Along a line, spans run left to
+    right.  A line (not a frame) is held horizontally as a whole: its axis does not slide.
+    Raises ModelError where the parts do not fit together.
+    """
+
+    mark: str
+    joints: tuple[Joint, ...]
+    members: tuple[Member, ...]
+    actions: tuple[Action, ...] = ()
+    kind: Kind = "line"
+    storey: str | None = None
+    elements: tuple[str, ...] = ()
+    origin: Point = (0.0, 0.0, 0.0)
+    """World point of x = z = 0."""
+    axis: Point = (1.0, 0.0, 0.0)
+    """World direction of x, horizontal."""
+
+    def __post_init__(self) -> None:
+        _check_numbering(self)
+        for member in self.members:
+            _check_member(self, member)
+        for action in self.actions:
+            _check_action(self, action)
+
+    def direction(self, member: Member) -> tuple[float, float]:
+        """Return the unit vector (cos a, sin a) from the member's start to its end."""
+        a, b = self.joints[member.start], self.joints[member.end]
+        length = math.hypot(b.x - a.x, b.z - a.z)
+        return (b.x - a.x) / length, (b.z - a.z) / length
+
+
+@dataclass(frozen=True, slots=True)
+class Transfer:
+    """The reaction at ``joint`` of ``from_line`` acts on ``to_line``.
+
+    It acts at ``position`` m from the start of ``member`` of that line.
+    """
+
+    from_line: str
+    joint: int
+    to_line: str
+    member: int
+    position: float
+
+
+@dataclass(frozen=True, slots=True)
+class LineModel:
+    """All lines of a building with the cases and combinations they are solved for."""
+
+    lines: tuple[Line, ...]
+    cases: tuple[Case, ...] = ()
+    combinations: tuple[Combination, ...] = ()
+    transfers: tuple[Transfer, ...] = ()
+    findings: tuple[Finding, ...] = ()
+    title: str = ""
+    assumptions: tuple[str, ...] = field(default=())
+
+
+def _check_numbering(line: Line) -> None:
+    if not line.members:
+        raise ModelError(f"Line {line.mark} has no members; a line needs at least one.")
+    for what, items in (("joint", line.joints), ("member", line.members)):
+        for index, item in enumerate(items):
+            if item.id != index:  # type: ignore[attr-defined]
+                raise ModelError(
+                    f"Line {line.mark}: {what} number {index} has id {item.id}; "  # type: ignore[attr-defined]
+                    f"ids count from 0 in order."
+                )
+
+
+def _check_member(line: Line, member: Member) -> None:
+    where = f"Line {line.mark}, member {member.id} ({member.element or 'no element'})"
+    for end in (member.start, member.end):
+        if not 0 <= end < len(line.joints):
+            raise ModelError(f"{where} refers to joint {end}; the line has {len(line.joints)}.")
+    a, b = line.joints[member.start], line.joints[member.end]
+    distance = math.hypot(b.x - a.x, b.z - a.z)
+    if not distance > 0.0:
+        raise ModelError(f"{where} has no length: both its joints are at x = {a.x:.3f} m.")
+    if abs(distance - member.length) > 1e-6 * distance:
+        raise ModelError(
+            f"{where} is {member.length:.6f} m long by its pieces and {distance:.6f} m between "
+            f"its joints."
+        )
+    for piece in member.pieces:
+        values = [piece.flexural_at(u / 8.0) for u in range(9)]
+        if not all(math.isfinite(v) and v > 0.0 for v in values):
+            raise ModelError(
+                f"{where} has flexural rigidity {min(values):.3g} N·m²; it must be positive. "
+                f"Check its section and its modulus of elasticity."
+            )
+    for spring in (member.start_spring, member.end_spring):
+        if not spring >= 0.0:
+            raise ModelError(f"{where} has an end spring of {spring}; it must not be negative.")
+
+
+def _check_action(line: Line, action: Action) -> None:
+    where = f"Line {line.mark}, case '{action.case}'"
+    if isinstance(action, JointForce | JointMovement):
+        if not 0 <= action.joint < len(line.joints):
+            raise ModelError(
+                f"{where}: an action refers to joint {action.joint}, which is missing."
+            )
+        return
+    if not 0 <= action.member < len(line.members):
+        raise ModelError(f"{where}: an action refers to member {action.member}; there is none.")
+    length = line.members[action.member].length
+    slack = 1e-9 * length
+    if isinstance(action, PointForce | PointMoment):
+        low = high = action.position
+    else:
+        low, high = action.start, action.end
+    if not (-slack <= low <= high <= length + slack):
+        raise ModelError(
+            f"{where}: an action from {low:.3f} m to {high:.3f} m lies outside member "
+            f"{action.member}, which is {length:.3f} m long ({action.source or 'no source'})."
+        )

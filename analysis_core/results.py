@@ -1,0 +1,165 @@
+"""Results of solving a line: frozen arrays.  Units and signs as in ``model``.
+
+Arrays have the case first.  They are marked read-only when they leave the solver.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis_core.findings import Finding
+from analysis_core.model import Line, LineModel
+
+Floats = NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class LineSolution:
+    """End forces and joint movements of one line for C cases, M members and J joints.
+
+    end_moments   (C, M, 2)  N·m, on the member at start and end, clockwise positive
+    end_shears    (C, M, 2)  N, diagram shear just inside start and end
+    axial         (C, M, 2)  N, tension positive, just inside start and end
+    rotations     (C, J)     rad, of the joint, clockwise positive
+    end_rotations (C, M, 2)  rad, of the member's own ends (differs from the joint's at a
+                             release or end spring)
+    displacements (C, J, 2)  m, (right, down)
+    reactions     (C, J, 3)  N, N, N·m: horizontal (right), vertical (up), moment (clockwise);
+                             0 where nothing supports
+    joint_residual, continuity_residual  largest over the line and its cases, N·m and rad
+    """
+
+    line: Line
+    cases: tuple[str, ...]
+    end_moments: Floats
+    end_shears: Floats
+    axial: Floats
+    rotations: Floats
+    end_rotations: Floats
+    displacements: Floats
+    reactions: Floats
+    joint_residual: float
+    continuity_residual: float
+    method: str
+
+
+@dataclass(frozen=True, slots=True)
+class Extreme:
+    """A governing value: ``x`` in m from the member's start, ``source`` names what governs.
+
+    ``source`` is the combination, and the loading arrangement where one governs:
+    "U2 (imposed on spans 1, 3)".
+    """
+
+    value: float
+    x: float = 0.0
+    source: str = ""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class MemberEnvelope:
+    """Exact extremes of one member over a limit state, and the envelope at N stations.
+
+    Values: N·m, N, m.  ``hogging`` is the lowest diagram moment, ``shear_min`` the lowest shear,
+    ``deflection_up`` the lowest deflection (a member that only sags has one of 0 or more).
+    ``start_moment``, ``end_moment``: lowest and highest diagram moment at the ends.
+    """
+
+    member: int
+    sagging: Extreme
+    hogging: Extreme
+    shear_max: Extreme
+    shear_min: Extreme
+    deflection_down: Extreme
+    deflection_up: Extreme
+    start_moment: tuple[float, float]
+    end_moment: tuple[float, float]
+    x: Floats
+    moment_max: Floats
+    moment_min: Floats
+    shear_max_at: Floats
+    shear_min_at: Floats
+    deflection_max: Floats
+    deflection_min: Floats
+
+
+@dataclass(frozen=True, slots=True)
+class ReactionEnvelope:
+    """Governing reactions at one joint: N, N, N·m, as in ``LineSolution.reactions``."""
+
+    joint: int
+    vertical_max: Extreme
+    vertical_min: Extreme
+    horizontal_max: Extreme = Extreme(0.0)
+    horizontal_min: Extreme = Extreme(0.0)
+    moment_max: Extreme = Extreme(0.0)
+    moment_min: Extreme = Extreme(0.0)
+
+
+@dataclass(frozen=True, slots=True)
+class LineEnvelope:
+    """Governing effects of one line for one limit state."""
+
+    limit_state: str
+    members: tuple[MemberEnvelope, ...]
+    reactions: tuple[ReactionEnvelope, ...]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Stations:
+    """Effects at N stations of each of M members for R results (cases or combinations).
+
+    x (M, N) in m from the member's start; moment, shear, deflection (R, M, N) in N·m, N and m.
+    """
+
+    names: tuple[str, ...]
+    x: Floats
+    moment: Floats
+    shear: Floats
+    deflection: Floats
+
+
+@dataclass(frozen=True, slots=True)
+class Verification:
+    """What every run proves of itself: N·m, rad, and a relative difference."""
+
+    joint_residual: float
+    continuity_residual: float
+    independent_check: float
+
+
+@dataclass(frozen=True, slots=True)
+class LineResult:
+    """One line with everything that was found out about it.
+
+    ``solution`` holds the cases; ``combined`` the same arrays for combinations (its ``cases``
+    are combination names), both None where the line was not analysed.  ``envelopes`` by limit
+    state.
+    """
+
+    line: Line
+    status: str
+    """"balanced" or "not analysed"."""
+    solution: LineSolution | None = None
+    combined: LineSolution | None = None
+    envelopes: Mapping[str, LineEnvelope] = field(default_factory=dict)
+    verification: Verification | None = None
+    fingerprint: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Outcome:
+    """A whole run: the file, the model and a result per line, in the order of its lines."""
+
+    file: str
+    schema: str
+    fingerprint: str
+    model: LineModel
+    lines: tuple[LineResult, ...]
+    findings: tuple[Finding, ...] = ()
+    rules: str = ""
+    """Name and edition of the rule set."""
