@@ -160,8 +160,8 @@ class SectionSetting:
     depth: float = 0.0
     width: float = 0.0
     taper: tuple[tuple[float, float], ...] = ()
-    """(fraction of the length, flexural rigidity as a multiple of the section's) pairs,
-    linear in depth between them (rigidity follows the cube)."""
+    """(part of the length from 0 to 1, depth as a multiple of the section's) pairs; the depth is
+    linear between them and the rigidity follows its cube."""
     source: str = ""
 
 

@@ -1,0 +1,396 @@
+"""Reads a job file: YAML, read safely, checked against its schema, into ``Settings``.
+
+The complete reference of the job file stands in README.md; ``job_schema.json`` is the schema
+for editors.
+"""
+
+from __future__ import annotations
+
+import json
+import math
+from collections.abc import Mapping
+from importlib import resources
+from pathlib import Path
+from typing import Any
+
+import yaml
+
+from analysis_core.errors import JobError
+from analysis_core.job_check import Position, check
+from analysis_core.settings import (
+    ActionSetting,
+    Analysis,
+    AreaActionSetting,
+    CaseSetting,
+    CombinationSetting,
+    Display,
+    Limits,
+    MaterialSetting,
+    MovementSetting,
+    Redistribution,
+    ReleaseSetting,
+    RuleSettings,
+    SectionSetting,
+    Selector,
+    Settings,
+    SupportSetting,
+    Tolerances,
+)
+from analysis_core.units import display_units
+
+_LARGEST = 4_000_000  # bytes; a job file is written by hand
+_CONDITIONS = {
+    # (vertical, horizontal, rotation) of the supports that have a name in the trade.
+    "pinned": (math.inf, math.inf, 0.0),
+    "fixed": (math.inf, math.inf, math.inf),
+    "guided": (0.0, 0.0, math.inf),
+    "free": (0.0, 0.0, 0.0),
+}
+_SHAPES = ("uniform", "linear", "polygonal", "point", "moment", "temperature")
+
+
+def load(path: str | Path) -> Settings:
+    """Return the settings of the job file at ``path``.
+
+    Raises JobError in one sentence that names the place, what was received and what is permitted.
+    """
+    path = Path(path)
+    try:
+        raw = path.read_bytes()
+    except OSError as error:
+        reason = error.strerror or error
+        raise JobError(f"Job file '{path}' cannot be read: {reason}.") from None
+    try:
+        text = raw.decode("utf-8-sig")
+    except UnicodeDecodeError:
+        raise JobError(f"Job file '{path}' is not UTF-8 text; save it as UTF-8.") from None
+    try:
+        return parse(text)
+    except JobError as error:
+        raise JobError(f"Job file '{path}': {error}") from None
+
+
+def parse(text: str) -> Settings:
+    """Return the settings that the text of a job file states.  Raises JobError."""
+    if len(text) > _LARGEST:
+        raise JobError(f"It is {len(text)} characters long; a job file has at most {_LARGEST}.")
+    data = read_yaml(text)
+    checked = check({} if data is None else data, schema())
+    return _settings(checked, text)
+
+
+def read_yaml(text: str) -> Any:
+    """Return the plain data of a job file's text, unchecked.  Raises JobError."""
+    try:
+        return yaml.load(text, Loader=_JobLoader)
+    except yaml.YAMLError as error:
+        raise JobError(f"It is not YAML: {' '.join(str(error).split())}.") from None
+    except RecursionError:
+        raise JobError("It is nested too deeply; a job file has a few levels.") from None
+
+
+def schema() -> dict[str, Any]:
+    """Return the JSON schema of the job file."""
+    source = resources.files("analysis_core").joinpath("job_schema.json")
+    loaded: dict[str, Any] = json.loads(source.read_text(encoding="utf-8"))
+    return loaded
+
+
+class _JobLoader(yaml.SafeLoader):
+    """The safe loader with the booleans of YAML 1.2; it also refuses repeated keys and aliases.
+
+    In YAML 1.1 the words on, off, yes and no are booleans; here they are words.  YAML keeps the
+    last of two equal keys in silence; a load would vanish.  Aliases make files that grow without
+    bound.
+    """
+
+    yaml_implicit_resolvers = {  # noqa: RUF012  # the name and form that yaml asks for
+        first: [
+            (tag, pattern)
+            for tag, pattern in resolvers
+            if tag != "tag:yaml.org,2002:bool" or first in "tTfF"
+        ]
+        for first, resolvers in yaml.SafeLoader.yaml_implicit_resolvers.items()
+    }
+
+    def compose_node(self, parent: Any, index: Any) -> Any:
+        if self.check_event(yaml.events.AliasEvent):
+            mark = self.peek_event().start_mark  # type: ignore[no-untyped-call]
+            raise JobError(f"Line {mark.line + 1} uses a YAML alias (*); write the value out.")
+        return super().compose_node(parent, index)
+
+    def construct_mapping(self, node: Any, deep: bool = False) -> Any:
+        seen: set[Any] = set()
+        for key_node, _ in node.value:
+            key = key_node.value
+            if isinstance(key, str) and key in seen:
+                line = key_node.start_mark.line + 1
+                raise JobError(f"Line {line} states the key '{key}' a second time; join the two.")
+            if isinstance(key, str):
+                seen.add(key)
+        return super().construct_mapping(node, deep=deep)
+
+
+def _settings(data: Mapping[str, Any], text: str) -> Settings:
+    def each(key: str, build: Any) -> tuple[Any, ...]:
+        return tuple(build(item, f"{key}[{i}]") for i, item in enumerate(data.get(key, ())))
+
+    return Settings(
+        title=data.get("title", ""),
+        display=_display(data.get("display", {})),
+        rules=_rules(data.get("rules", {})),
+        analysis=Analysis(**_tupled(data.get("analysis", {}))),
+        tolerances=Tolerances(**data.get("tolerances", {})),
+        cases=each("cases", _case),
+        combinations=each("combinations", _combination),
+        actions=each("actions", _action),
+        area_actions=each("area_actions", _area_action),
+        movements=each("movements", _movement),
+        supports=each("supports", _support),
+        releases=each("releases", _release),
+        materials=each("materials", _material),
+        sections=each("sections", _section),
+        limits=each("limits", _limits),
+        text=text,
+    )
+
+
+def _display(data: Mapping[str, Any]) -> Display:
+    display = Display(**data)
+    try:
+        display_units(display.system, display.units)
+    except ValueError as error:
+        raise JobError(f"'display.units': {error}.") from None
+    return display
+
+
+def _rules(data: Mapping[str, Any]) -> RuleSettings:
+    known = dict(data)
+    which = known.pop("combinations", None)
+    redistribution = known.pop("redistribution", ())
+    if "set" in known:
+        known["name"] = known.pop("set")
+    return RuleSettings(
+        **known,
+        use_model_combinations=which != "rules",
+        use_rule_combinations={None: None, "model": False, "rules": True, "both": True}[which],
+        redistribution=tuple(
+            _redistribution(item, f"rules.redistribution[{i}]")
+            for i, item in enumerate(redistribution)
+        ),
+    )
+
+
+def _redistribution(data: Mapping[str, Any], where: str) -> Redistribution:
+    joints: dict[int, float] = {}
+    for joint, fraction in data.get("joints", {}).items():
+        if not joint.isdigit():
+            raise JobError(f"'{where}.joints' has the key '{joint}'; it must be a joint number.")
+        joints[int(joint)] = fraction
+    return Redistribution(
+        fraction=data.get("fraction", 0.0),
+        largest=data.get("largest", False),
+        per_joint=joints,
+        on=_selector(data.get("on", {})),
+    )
+
+
+def _selector(data: Mapping[str, Any]) -> Selector:
+    ids = data.get("id", ())
+    return Selector(
+        global_ids=(ids,) if isinstance(ids, str) else tuple(ids),
+        name=data.get("name", ""),
+        ifc_class=data.get("class", ""),
+        type_name=data.get("type", ""),
+        material=data.get("material", ""),
+        storey=data.get("storey", ""),
+        line=data.get("line", ""),
+    )
+
+
+def _case(data: Mapping[str, Any], where: str) -> CaseSetting:
+    return CaseSetting(
+        name=data["name"],
+        nature=data.get("nature", "other"),
+        category=data.get("category", ""),
+        one_by_one=data.get("by_span"),
+    )
+
+
+def _combination(data: Mapping[str, Any], where: str) -> CombinationSetting:
+    return CombinationSetting(**data)
+
+
+def _action(data: Mapping[str, Any], where: str) -> ActionSetting:
+    shape = _one_of(data, _SHAPES, where)
+    value = data[shape]
+    values = tuple(value) if isinstance(value, list) else (value,)
+    stations, relative = _positions(data.get("at"), f"{where}.at")
+    start, end = data.get("from"), data.get("to")
+    if start is not None or end is not None:
+        if stations:
+            raise JobError(f"'{where}' has both 'at' and 'from'/'to'; state one of them.")
+        relative = _same_kind([p for p in (start, end) if p is not None], where)
+    _check_places(shape, values, stations, start is not None or end is not None, where)
+    if shape in ("point", "moment"):
+        values = values * len(stations)
+    return ActionSetting(
+        case=data["case"],
+        on=_selector(data["on"]),
+        shape=shape,  # type: ignore[arg-type]  # one of _SHAPES
+        values=values,
+        stations=stations,
+        start=start.value if start is not None else 0.0,
+        end=end.value if end is not None else math.inf,
+        relative=relative,
+        direction=data.get("direction", "down"),
+        projected=data.get("projected", False),
+        source=where,
+    )
+
+
+def _check_places(
+    shape: str, values: tuple[float, ...], stations: tuple[float, ...], part: bool, where: str
+) -> None:
+    if shape in ("point", "moment") and not stations:
+        raise JobError(f"'{where}' has a {shape} without a place; add 'at: 2.5 m' or 'at: 50 %'.")
+    if shape in ("point", "moment") and part:
+        raise JobError(f"'{where}' has a {shape} with 'from'/'to'; it needs 'at'.")
+    if shape == "polygonal" and len(values) != len(stations):
+        raise JobError(
+            f"'{where}' has {len(values)} intensities and {len(stations)} positions; "
+            f"a polygonal force needs one position each in 'at'."
+        )
+    if shape == "polygonal" and list(stations) != sorted(stations):
+        raise JobError(f"'{where}.at' must go from the start of the member to its end.")
+    if shape == "linear" and len(values) != 2:
+        raise JobError(f"'{where}.linear' has {len(values)} intensities; it needs two.")
+    if shape in ("uniform", "linear", "temperature") and stations:
+        raise JobError(f"'{where}' has 'at'; a {shape} action is placed by 'from' and 'to'.")
+
+
+def _area_action(data: Mapping[str, Any], where: str) -> AreaActionSetting:
+    direction = data.get("direction")
+    if direction is not None and (len(direction) != 2 or not any(direction)):
+        raise JobError(f"'{where}.direction' must be two numbers [x, y], not both 0.")
+    return AreaActionSetting(
+        case=data["case"],
+        on=_selector(data["on"]),
+        intensity=data["load"],
+        spread=data.get("spread", "auto"),
+        span_direction=(direction[0], direction[1]) if direction else None,
+        source=where,
+    )
+
+
+def _movement(data: Mapping[str, Any], where: str) -> MovementSetting:
+    if "down" not in data and "rotation" not in data:
+        raise JobError(f"'{where}' moves nothing; state 'down' or 'rotation'.")
+    return MovementSetting(
+        case=data["case"],
+        at=_selector(data["on"]),
+        end=data.get("end", ""),
+        down=data.get("down", 0.0),
+        rotation=data.get("rotation", 0.0),
+        source=where,
+    )
+
+
+def _support(data: Mapping[str, Any], where: str) -> SupportSetting:
+    stiffness = {k: data[k] for k in ("vertical", "horizontal", "rotation") if k in data}
+    if ("condition" in data) == bool(stiffness):
+        raise JobError(f"'{where}' needs either a 'condition' or stiffnesses.")
+    if "condition" in data:
+        names = ("vertical", "horizontal", "rotation")
+        stiffness = dict(zip(names, _CONDITIONS[data["condition"]], strict=True))
+    _not_negative(stiffness, where)
+    return SupportSetting(
+        on=_selector(data["on"]), end=_end(data, where), position=_at(data, where),
+        source=where, **stiffness,
+    )  # fmt: skip
+
+
+def _release(data: Mapping[str, Any], where: str) -> ReleaseSetting:
+    rotation = data.get("rotation", 0.0)
+    _not_negative({"rotation": rotation}, where)
+    return ReleaseSetting(
+        on=_selector(data["on"]),
+        end=_end(data, where) or "both",
+        rotation=rotation,
+        position=_at(data, where),
+        source=where,
+    )
+
+
+def _material(data: Mapping[str, Any], where: str) -> MaterialSetting:
+    known = dict(data)
+    override = not known.pop("fill_gaps_only", False)
+    return MaterialSetting(**known, override=override)
+
+
+def _section(data: Mapping[str, Any], where: str) -> SectionSetting:
+    known = {k: v for k, v in data.items() if k not in ("on", "taper")}
+    taper = []
+    for i, pair in enumerate(data.get("taper", ())):
+        if len(pair) != 2 or any(isinstance(v, Position) for v in pair):
+            raise JobError(f"'{where}.taper[{i}]' must be two numbers: part of the length, depth.")
+        if not 0.0 <= pair[0] <= 1.0 or pair[1] <= 0.0:
+            raise JobError(f"'{where}.taper[{i}]' must lie from 0 to 1, with a positive depth.")
+        taper.append((float(pair[0]), float(pair[1])))
+    if taper and (taper[0][0] != 0.0 or taper[-1][0] != 1.0 or taper != sorted(taper)):
+        raise JobError(f"'{where}.taper' must go from 0 to 1 in order.")
+    return SectionSetting(on=_selector(data["on"]), taper=tuple(taper), source=where, **known)
+
+
+def _limits(data: Mapping[str, Any], where: str) -> Limits:
+    known = {k: v for k, v in data.items() if k != "on"}
+    return Limits(on=_selector(data.get("on", {})), **known)
+
+
+def _end(data: Mapping[str, Any], where: str) -> Any:
+    if "end" in data and "at" in data:
+        raise JobError(f"'{where}' has both 'end' and 'at'; state one of them.")
+    return data.get("end", "" if "at" in data else "both")
+
+
+def _at(data: Mapping[str, Any], where: str) -> float | None:
+    position = data.get("at")
+    if position is None:
+        return None
+    if position.relative:
+        raise JobError(f"'{where}.at' must be a length from the member's start, as in '2.5 m'.")
+    value: float = position.value
+    return value
+
+
+def _positions(data: object, where: str) -> tuple[tuple[float, ...], bool]:
+    if data is None:
+        return (), False
+    items: list[Any] = data if isinstance(data, list) else [data]
+    relative = _same_kind(items, where)
+    return tuple(item.value for item in items), relative
+
+
+def _same_kind(items: list[Any], where: str) -> bool:
+    kinds = {item.relative for item in items}
+    if len(kinds) > 1:
+        raise JobError(f"'{where}' mixes lengths and percentages; use one of them.")
+    return bool(kinds.pop())
+
+
+def _one_of(data: Mapping[str, Any], keys: tuple[str, ...], where: str) -> str:
+    found = [key for key in keys if key in data]
+    if len(found) != 1:
+        what = " and ".join(found) or "none"
+        raise JobError(f"'{where}' needs exactly one of {', '.join(keys)}; it has {what}.")
+    return found[0]
+
+
+def _not_negative(stiffness: Mapping[str, float], where: str) -> None:
+    for name, value in stiffness.items():
+        if value < 0.0:
+            raise JobError(f"'{where}.{name}' is negative; a stiffness is 0 or more.")
+
+
+def _tupled(data: Mapping[str, Any]) -> dict[str, Any]:
+    return {k: tuple(v) if isinstance(v, list) else v for k, v in data.items()}
