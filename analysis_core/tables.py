@@ -1,0 +1,276 @@
+"""Tables and sentences for the screen: an Outcome in the display units of the job file.
+
+No arithmetic beyond units.  Names from a model are hostile text: control characters are shown
+as escapes, so that nothing in a file can drive a terminal.
+"""
+
+from __future__ import annotations
+
+import math
+import unicodedata
+from collections import Counter
+from collections.abc import Iterable, Sequence
+
+from analysis_core.findings import Finding, Severity
+from analysis_core.model import Joint, Line, LineModel, Member, Support
+from analysis_core.results import LineResult, MemberEnvelope, Outcome
+from analysis_core.units import DisplayUnits
+
+CAUTION = (
+    "Caution: computed from the model as idealised. Local codes govern; a licensed engineer must "
+    "check every result before it is used."
+)
+
+
+def safe(text: str) -> str:
+    """Return text with control and direction-changing characters made visible."""
+    return "".join(
+        c if unicodedata.category(c) not in ("Cc", "Cf", "Cs", "Zl", "Zp") else f"\\u{ord(c):04x}"
+        for c in text
+    )
+
+
+def survey_text(model: LineModel, file: str, schema: str, units: DisplayUnits) -> str:
+    """Return what was found: lines, spans, supports with their reasons, actions, findings."""
+    parts = [_headline(model, file, schema)]
+    parts += [_survey_line(line, units) for line in model.lines]
+    parts.append(_cases_text(model))
+    parts.append(findings_text(model.findings))
+    parts.append(CAUTION)
+    return "\n\n".join(part for part in parts if part)
+
+
+def balance_text(outcome: Outcome, units: DisplayUnits) -> str:
+    """Return the governing effects per span, the reactions, the verification and the findings."""
+    model = outcome.model
+    parts = [_headline(model, outcome.file, outcome.schema)]
+    if outcome.rules:
+        parts.append(f"Rules: {safe(outcome.rules)}; {len(model.combinations)} combinations.")
+    parts.append(_effects_table(outcome, units))
+    parts.append(_reactions_table(outcome, units))
+    parts.append(_verification_text(outcome, units))
+    parts.append(findings_text(outcome.findings))
+    parts.append(CAUTION)
+    return "\n\n".join(part for part in parts if part)
+
+
+def findings_text(findings: Sequence[Finding]) -> str:
+    """Return the findings, gravest first, or "" where there are none."""
+    if not findings:
+        return ""
+    order: dict[Severity, int] = {"error": 0, "warning": 1, "note": 2}
+    counts = Counter(f.severity for f in findings)
+    head = ", ".join(f"{counts[s]} {s}{'s' if counts[s] > 1 else ''}" for s in order if counts[s])
+    rows = [_finding_text(f) for f in sorted(findings, key=lambda f: order[f.severity])]
+    return "\n".join([f"Findings: {head}", *rows])
+
+
+def table(head: Sequence[str], units: Sequence[str], rows: Iterable[Sequence[str]]) -> str:
+    """Return aligned columns: the first to the left, the others to the right."""
+    body = [list(row) for row in rows]
+    every = [list(head), list(units), *body] if any(units) else [list(head), *body]
+    widths = [max(len(row[i]) for row in every) for i in range(len(head))]
+    lines = ["  ".join(_cell(c, w, i) for i, (c, w) in enumerate(zip(row, widths, strict=True)))
+             for row in every]  # fmt: skip
+    rule = "-" * len(lines[0])
+    top = 2 if any(units) else 1
+    return "\n".join(line.rstrip() for line in [*lines[:top], rule, *lines[top:]])
+
+
+def support_text(support: Support | None, units: DisplayUnits) -> str:
+    """Return a support in the words of the trade, or its stiffnesses."""
+    if support is None:
+        return "no support"
+    vertical, rotation = support.vertical, support.rotation
+    words = {
+        (math.inf, 0.0): "pinned",
+        (math.inf, math.inf): "fixed",
+        (0.0, math.inf): "guided",
+        (0.0, 0.0): "free",
+    }
+    if (vertical, rotation) in words:
+        return words[vertical, rotation]
+    return (
+        f"vertical {_stiffness(vertical, units, 'translational stiffness')}, "
+        f"rotation {_stiffness(rotation, units, 'rotational stiffness')}"
+    )
+
+
+def _stiffness(value: float, units: DisplayUnits, quantity: str) -> str:
+    if math.isinf(value):
+        return "rigid"
+    return units.text(value, quantity) if value else "free"
+
+
+def _cell(text: str, width: int, column: int) -> str:
+    return text.ljust(width) if column == 0 else text.rjust(width)
+
+
+def _headline(model: LineModel, file: str, schema: str) -> str:
+    spans = sum(m.role == "span" for line in model.lines for m in line.members)
+    frames = sum(line.kind == "frame" for line in model.lines)
+    kinds = f"{len(model.lines) - frames} beam lines" + (f", {frames} frames" if frames else "")
+    title = f"{safe(model.title)}: " if model.title else ""
+    return f"{title}{safe(file)} ({schema}): {kinds}, {spans} spans."
+
+
+def _survey_line(line: Line, units: DisplayUnits) -> str:
+    spans = [m for m in line.members if m.role == "span"]
+    lengths = " + ".join(units.number(m.length, "length") for m in spans)
+    storey = f", {safe(line.storey)}" if line.storey else ""
+    kind = "frame" if line.kind == "frame" else "line"
+    rows = [f"{safe(line.mark)}  {kind}{storey}: {lengths} {units.symbol('length')}"]
+    rows += [_survey_member(m, units) for m in line.members]
+    rows += [_survey_joint(j, units) for j in line.joints if j.support is not None or j.reason]
+    counts = Counter(action.case for action in line.actions)
+    if counts:
+        rows.append("  actions: " + ", ".join(f"{safe(c)} {n}" for c, n in sorted(counts.items())))
+    return "\n".join(rows)
+
+
+def _survey_member(member: Member, units: DisplayUnits) -> str:
+    what = f"span {member.span}" if member.role == "span" and member.span else member.role
+    section = safe(member.section.name) if member.section else "section by stiffness"
+    material = safe(member.material.name) if member.material else "material not named"
+    ends = [
+        f"{end} {'released' if spring == 0.0 else 'on a spring'}"
+        for end, spring in (("start", member.start_spring), ("end", member.end_spring))
+        if not math.isinf(spring)
+    ]
+    tail = f", {', '.join(ends)}" if ends else ""
+    rigidity = units.text(member.flexural_rigidity, "flexural rigidity")
+    return (
+        f"  {what}: {units.text(member.length, 'length')}, {section}, {material}, "
+        f"EI {rigidity}{tail}  [{safe(member.element)}]"
+    )
+
+
+def _survey_joint(joint: Joint, units: DisplayUnits) -> str:
+    reason = f": {safe(joint.reason)}" if joint.reason else ""
+    element = f"  [{safe(joint.element)}]" if joint.element else ""
+    return (
+        f"  joint {joint.id} at {units.text(joint.x, 'length')}: "
+        f"{support_text(joint.support, units)}{reason}{element}"
+    )
+
+
+def _cases_text(model: LineModel) -> str:
+    if not model.cases:
+        return ""
+    rows = [
+        (safe(c.name), c.nature, safe(c.category) or "-", safe(c.source) or "-")
+        for c in model.cases
+    ]
+    return table(("case", "nature", "category", "settled by"), ("",) * 4, rows)
+
+
+def _effects_table(outcome: Outcome, units: DisplayUnits) -> str:
+    head = ("line", "span", "length", "sagging", "at", "hogging", "at", "shear", "at",
+            "deflection", "at", "ratio")  # fmt: skip
+    length, moment = units.symbol("length"), units.symbol("moment")
+    below = ("", "", length, moment, length, moment, length, units.symbol("force"), length,
+             units.symbol("deflection"), length, "")  # fmt: skip
+    rows: list[Sequence[str]] = []
+    sources: list[str] = []
+    for result in outcome.lines:
+        if result.status != "balanced":
+            rows.append((safe(result.line.mark), "not analysed", *[""] * 10))
+            continue
+        for member in result.line.members:
+            rows.append(_effects_row(result, member, units))
+        sources += _governing(result)
+    if not rows:
+        return "No lines were found."
+    notes = "\n".join(dict.fromkeys(sources))
+    return table(head, below, rows) + (f"\n\nGoverning:\n{notes}" if notes else "")
+
+
+def _effects_row(result: LineResult, member: Member, units: DisplayUnits) -> Sequence[str]:
+    strength = _member_envelope(result, "strength", member.id)
+    service = _member_envelope(result, "serviceability", member.id)
+    name = str(member.span) if member.span else f"leg {member.id}" if member.role == "leg" else str(
+        member.id
+    )  # fmt: skip
+    row = [safe(result.line.mark), name, units.number(member.length, "length")]
+    if strength is None:
+        row += ["-"] * 6
+    else:
+        shear = max(strength.shear_max, strength.shear_min, key=lambda e: abs(e.value))
+        for extreme, quantity in (
+            (strength.sagging, "moment"),
+            (strength.hogging, "moment"),
+            (shear, "force"),
+        ):
+            row += [units.number(extreme.value, quantity), units.number(extreme.x, "length")]
+    if service is None:
+        return [*row, "-", "-", "-"]
+    worst = max(service.deflection_down, service.deflection_up, key=lambda e: abs(e.value))
+    ratio = f"L/{member.length / abs(worst.value):.0f}" if abs(worst.value) > 1e-9 else "-"
+    return [*row, units.number(worst.value, "deflection"), units.number(worst.x, "length"), ratio]
+
+
+def _member_envelope(result: LineResult, state: str, member: int) -> MemberEnvelope | None:
+    envelope = result.envelopes.get(state)
+    if envelope is None:
+        return None
+    return next((m for m in envelope.members if m.member == member), None)
+
+
+def _governing(result: LineResult) -> list[str]:
+    """The combination and arrangement behind the line's largest effects."""
+    envelope = result.envelopes.get("strength")
+    if envelope is None or not envelope.members:
+        return []
+    best = max(envelope.members, key=lambda m: m.sagging.value).sagging
+    worst = min(envelope.members, key=lambda m: m.hogging.value).hogging
+    return [
+        f"  {safe(result.line.mark)}: sagging by {safe(best.source)}; "
+        f"hogging by {safe(worst.source)}"
+    ]
+
+
+def _reactions_table(outcome: Outcome, units: DisplayUnits) -> str:
+    force, moment = units.symbol("force"), units.symbol("moment")
+    rows: list[Sequence[str]] = []
+    for result in outcome.lines:
+        envelope = result.envelopes.get("strength")
+        if envelope is None:
+            continue
+        for reaction in envelope.reactions:
+            joint = result.line.joints[reaction.joint]
+            rows.append((
+                safe(result.line.mark),
+                str(joint.id),
+                units.number(joint.x, "length"),
+                units.number(reaction.vertical_max.value, "force"),
+                units.number(reaction.vertical_min.value, "force"),
+                units.number(reaction.moment_max.value, "moment"),
+                units.number(reaction.moment_min.value, "moment"),
+                safe(joint.element or "-"),
+            ))  # fmt: skip
+    if not rows:
+        return ""
+    head = ("line", "joint", "x", "vertical max", "vertical min", "moment max", "moment min", "on")
+    below = ("", "", units.symbol("length"), force, force, moment, moment, "")
+    return "Reactions (strength, factored; vertical positive upward)\n" + table(head, below, rows)
+
+
+def _verification_text(outcome: Outcome, units: DisplayUnits) -> str:
+    checks = [r.verification for r in outcome.lines if r.verification is not None]
+    if not checks:
+        return ""
+    joint = max(c.joint_residual for c in checks)
+    turn = max(c.continuity_residual for c in checks)
+    other = max(c.independent_check for c in checks)
+    return (
+        f"Verification of {len(checks)} lines: largest joint residual {joint:.1e} N·m, continuity "
+        f"residual {turn:.1e} rad, difference from the stiffness solution {other:.1e} (relative)."
+    )
+
+
+def _finding_text(finding: Finding) -> str:
+    line = f" {safe(finding.line)}" if finding.line else ""
+    shown = finding.elements[:4]
+    more = f" and {len(finding.elements) - 4} more" if len(finding.elements) > 4 else ""
+    elements = f"  [{', '.join(safe(e) for e in shown)}{more}]" if shown else ""
+    return f"  {finding.severity} {finding.slug}{line}: {safe(finding.message)}{elements}"
