@@ -354,7 +354,8 @@ class LineModel:
     transfers: tuple[Transfer, ...] = ()
     findings: tuple[Finding, ...] = ()
     title: str = ""
-    assumptions: tuple[str, ...] = field(default=())
+    names: Mapping[str, str] = field(default_factory=dict)
+    """Name by GlobalId of everything that lines and findings refer to."""
 
 
 def _check_numbering(line: Line) -> None:

@@ -149,6 +149,9 @@ class LineResult:
     envelopes: Mapping[str, LineEnvelope] = field(default_factory=dict)
     verification: Verification | None = None
     fingerprint: str = ""
+    """Of all that the results depend on; see ``fingerprints``."""
+    basis: Mapping[str, str] = field(default_factory=dict)
+    """What the fingerprint was taken of, in short texts by subject."""
 
 
 @dataclass(frozen=True, slots=True)

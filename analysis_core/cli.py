@@ -1,0 +1,230 @@
+"""The command line.  What was asked for goes to stdout, progress and messages to stderr.
+
+Exit status: 0 everything asked for was done; 1 done, but some lines could not be analysed (their
+findings say why); 2 nothing could be done: one clear message on stderr, no traceback.
+"""
+
+from __future__ import annotations
+
+import argparse
+import json
+import os
+import sys
+from collections.abc import Callable, Sequence
+from dataclasses import replace
+from pathlib import Path
+from typing import Any
+
+from analysis_core import __version__, pipeline
+from analysis_core.errors import AnalysisError, JobError
+from analysis_core.settings import Settings
+from analysis_core.tables import CAUTION, balance_text, record_text, safe, survey_text
+from analysis_core.units import display_units
+
+OK, INCOMPLETE, FAILED = 0, 1, 2
+
+_DESCRIPTION = """\
+Reads beams, supports and loads from an IFC model, idealises them as beam lines, solves them by
+moment distribution and writes the results back as property sets.
+
+Start with:  spanledger survey MODEL.ifc      what was found, and why it was taken so
+then:        spanledger balance MODEL.ifc     moments, shears, deflections and reactions
+and:         spanledger post MODEL.ifc -o OUT.ifc"""
+
+
+def main(arguments: Sequence[str] | None = None) -> int:
+    """Run one command and return the exit status."""
+    options = _parser().parse_args(arguments)
+    try:
+        status: int = options.run(options)
+        sys.stdout.flush()
+        return status
+    except AnalysisError as error:
+        return _failed(str(error))
+    except BrokenPipeError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return OK
+    except KeyboardInterrupt:
+        return _failed("Stopped; nothing was written.")
+    except MemoryError:
+        return _failed("The model does not fit into memory; close other programs or split it.")
+    except OSError as error:
+        where = f"'{error.filename}': " if error.filename else ""
+        return _failed(f"{where}{error.strerror or error}.")
+
+
+def _failed(message: str) -> int:
+    print(f"spanledger: {safe(message)}", file=sys.stderr)
+    return FAILED
+
+
+def _parser() -> argparse.ArgumentParser:
+    parser = argparse.ArgumentParser(
+        prog="spanledger", description=_DESCRIPTION, epilog=CAUTION,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+    )  # fmt: skip
+    parser.add_argument("--version", action="version", version=f"spanledger {__version__}")
+    commands = parser.add_subparsers(metavar="COMMAND", required=True, title="commands")
+    _survey_options(commands)
+    _balance_options(commands)
+    _post_options(commands)
+    _rules_options(commands)
+    return parser
+
+
+def _command(commands: Any, name: str, run: Callable[..., int], about: str) -> Any:
+    command = commands.add_parser(
+        name, help=about, description=about[0].upper() + about[1:] + ".", epilog=CAUTION
+    )
+    command.set_defaults(run=run)
+    return command
+
+
+def _model_options(command: Any) -> None:
+    command.add_argument("model", metavar="MODEL.ifc", help="the IFC file (.ifc or .ifczip)")
+    command.add_argument("--job", metavar="JOB.yaml", help="settings beside the model")
+    command.add_argument(
+        "--json", metavar="FILE", help="write the results as JSON ('-': to standard output)"
+    )
+    command.add_argument(
+        "--line", metavar="MARK", action="append", default=[],
+        help="only this line (may be repeated)",
+    )  # fmt: skip
+
+
+def _survey_options(commands: Any) -> None:
+    about = "list lines, spans, supports, actions and findings; solve nothing"
+    command = _command(commands, "survey", _survey, about)
+    _model_options(command)
+
+
+def _balance_options(commands: Any) -> None:
+    about = "solve every line and print its governing effects"
+    command = _command(commands, "balance", _balance, about)
+    _model_options(command)
+    command.add_argument(
+        "--record", action="store_true",
+        help="print the distribution table of each chosen line and case",
+    )  # fmt: skip
+    command.add_argument(
+        "--stations", type=_station_count, default=21, metavar="N",
+        help="stations per span in the JSON, ends included (default 21)",
+    )  # fmt: skip
+
+
+def _post_options(commands: Any) -> None:
+    about = "solve every line and write the results into a copy of the model"
+    command = _command(commands, "post", _post, about)
+    _model_options(command)
+    where = command.add_mutually_exclusive_group(required=True)
+    where.add_argument("-o", "--output", metavar="OUT.ifc", help="the copy to write")
+    where.add_argument(
+        "--in-place", action="store_true", help="replace the model itself, all at once"
+    )
+    command.add_argument(
+        "--stations", type=_station_count, default=21, metavar="N", help=argparse.SUPPRESS
+    )
+
+
+def _rules_options(commands: Any) -> None:
+    about = "list the built-in rule sets, or print one"
+    command = _command(commands, "rules", _rules, about)
+    command.add_argument("name", nargs="?", metavar="NAME", help="the rule set to print")
+
+
+def _survey(options: argparse.Namespace) -> int:
+    settings = _settings(options)
+    survey = pipeline.survey(options.model, settings, progress=_progress(), only=options.line)
+    units = display_units(settings.display.system, settings.display.units)
+    _put(options, lambda: pipeline.survey_document(survey),
+         survey_text(survey.model, survey.file, survey.schema, units))  # fmt: skip
+    return INCOMPLETE if any(f.severity == "error" for f in survey.findings) else OK
+
+
+def _balance(options: argparse.Namespace) -> int:
+    settings = _settings(options)
+    outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
+    units = display_units(settings.display.system, settings.display.units)
+    text = balance_text(outcome, units)
+    if options.record:
+        text = record_text(pipeline.records(outcome), units) + "\n\n" + text
+    _put(options, lambda: pipeline.document(outcome, stations=options.stations), text)
+    return _status(outcome)
+
+
+def _post(options: argparse.Namespace) -> int:
+    settings = _settings(options)
+    target = Path(options.model if options.in_place else options.output)
+    outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
+    report = pipeline.post(outcome, options.model, target, progress=_progress())
+    _put(options, lambda: pipeline.document(outcome, stations=options.stations), "")
+    print(f"{report.summary} {CAUTION}", file=sys.stderr)
+    return _status(outcome)
+
+
+def _rules(options: argparse.Namespace) -> int:
+    print(pipeline.rules_text(options.name))
+    return OK
+
+
+def _status(outcome: pipeline.Outcome) -> int:
+    failed = any(result.status != "balanced" for result in outcome.lines)
+    return INCOMPLETE if failed or any(f.severity == "error" for f in outcome.findings) else OK
+
+
+def _settings(options: argparse.Namespace) -> Settings:
+    if options.job is None:
+        return Settings()
+    from analysis_core.job import load  # YAML is only loaded when there is a job file
+
+    settings = load(options.job)
+    rules = settings.rules
+    if rules.name.endswith((".yaml", ".yml")) and not Path(rules.name).is_absolute():
+        beside = Path(options.job).resolve().parent / rules.name
+        settings = replace(settings, rules=replace(rules, name=str(beside)))
+    return settings
+
+
+def _put(options: argparse.Namespace, document: Callable[[], Any], text: str) -> None:
+    """Print the table, unless the JSON goes to stdout; write the JSON where it was asked for."""
+    if options.json:
+        data = json.dumps(document(), ensure_ascii=False, indent=1, allow_nan=False)
+        if options.json == "-":
+            print(data)
+            return
+        _write(Path(options.json), data + "\n")
+    if text:
+        print(text)
+
+
+def _write(path: Path, text: str) -> None:
+    try:
+        path.write_text(text, encoding="utf-8")
+    except OSError as error:
+        raise JobError(f"'{path}' cannot be written: {error.strerror or error}.") from None
+
+
+def _station_count(text: str) -> int:
+    try:
+        count = int(text)
+    except ValueError:
+        count = 0
+    if not 2 <= count <= 10_001:
+        raise argparse.ArgumentTypeError(f"'{text}' must be a whole number from 2 to 10001")
+    return count
+
+
+def _progress() -> Callable[[str, float], None] | None:
+    """A progress line on stderr, silent when that is not a terminal."""
+    if not sys.stderr.isatty():
+        return None
+
+    def show(step: str, part: float) -> None:
+        end = "\n" if part >= 1.0 else ""
+        print(f"\r\033[K{step} {100.0 * part:3.0f} %", end=end, file=sys.stderr, flush=True)
+
+    return show
+
+
+if __name__ == "__main__":
+    sys.exit(main())

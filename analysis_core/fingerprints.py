@@ -1,0 +1,192 @@
+"""Fingerprints: what the results of a line depend on, and what of it has changed.
+
+The *basis* of a line is a mapping of subjects to short texts: geometry, each element's section
+and material, each support, the actions of each case, rules and settings, and the fingerprints of
+the lines whose reactions it receives.  The fingerprint is the hash of the basis.  The basis is
+stored with the results, so that a later run can say not only that a result is stale but why.
+Lengths are rounded to a micrometre and other values to nine digits: a re-saved file does not
+make a result stale.  The place of a line in the building is not part of it.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import json
+import math
+from collections.abc import Mapping, Sequence
+from dataclasses import fields
+
+from analysis_core.model import (
+    Action,
+    Combination,
+    JointForce,
+    JointMovement,
+    Line,
+    Member,
+    Support,
+)
+from analysis_core.settings import Settings
+
+
+def fingerprint(basis: Mapping[str, str]) -> str:
+    """Return the fingerprint of a basis: 32 hexadecimal digits."""
+    text = json.dumps(basis, sort_keys=True, ensure_ascii=True)
+    return hashlib.sha256(text.encode("ascii")).hexdigest()[:32]
+
+
+def basis(
+    line: Line,
+    *,
+    combinations: Sequence[Combination],
+    rules: str,
+    settings: Settings,
+    received: Mapping[str, str],
+) -> dict[str, str]:
+    """Return what the results of ``line`` depend on.
+
+    ``received``: fingerprint by mark of the lines whose reactions act on this one.
+    """
+    texts = {"geometry": _geometry(line)}
+    for member in line.members:
+        key = member.element or str(member.id)
+        _join(texts, f"section {key}", _section(member))
+        _join(texts, f"material {key}", _material(member))
+    for joint in line.joints:
+        if joint.support is not None:
+            texts[f"support {joint.id}"] = _support(joint.support)
+    for case in sorted({action.case for action in line.actions}):
+        texts[f"actions {case}"] = _actions([a for a in line.actions if a.case == case])
+    texts["combinations"] = _digest(
+        [[c.name, c.limit_state, sorted(c.factors.items())] for c in combinations]
+    )
+    texts["rules"] = rules
+    texts["settings"] = _digest(
+        [repr(settings.rules), repr(settings.analysis), repr(settings.limits)]
+    )
+    for mark, print_ in received.items():
+        texts[f"received {mark}"] = print_
+    return texts
+
+
+def differences(
+    before: Mapping[str, str], after: Mapping[str, str], names: Mapping[str, str]
+) -> list[str]:
+    """Return sentences that say what changed between two bases of a line.
+
+    ``names``: name by GlobalId, for sentences that an engineer understands.
+    """
+    sentences = []
+    for key in sorted({*before, *after}):
+        old, new = before.get(key), after.get(key)
+        if old == new:
+            continue
+        subject, _, which = key.partition(" ")
+        what = _subject(subject, which, names)
+        if subject == "received" and old and new:
+            sentences.append(f"{which}, whose reactions it receives, changed")
+        elif subject in ("geometry", "section", "material", "support", "actions", "rules"):
+            sentences.append(_change(what, old, new))
+        else:
+            sentences.append(f"{what} changed")
+    return sentences
+
+
+def _subject(subject: str, which: str, names: Mapping[str, str]) -> str:
+    if not which:
+        return subject
+    if subject == "support":
+        return f"support at joint {which}"
+    if subject == "received":
+        return f"reactions of {which}"
+    return f"{subject} of {names.get(which) or which}"
+
+
+def _change(what: str, old: str | None, new: str | None) -> str:
+    if old is None:
+        return f"{what} is new ({new})"
+    if new is None:
+        return f"{what} is gone (was {old})"
+    return f"{what} changed from {old} to {new}"
+
+
+def _geometry(line: Line) -> str:
+    spans = " + ".join(_short(m.length) for m in line.members)
+    detail = [
+        line.kind,
+        [[_micrometres(j.x), _micrometres(j.z)] for j in line.joints],
+        [
+            [m.start, m.end, m.role, _nine(m.start_spring), _nine(m.end_spring)]
+            for m in line.members
+        ],
+    ]
+    return f"{spans} m #{_digest(detail)}"
+
+
+def _section(member: Member) -> str:
+    section = member.section
+    pieces = [[_nine(p.length), [_nine(c) for c in p.flexural], _nine(p.power),
+               [_nine(c) for c in p.shear or ()]] for p in member.pieces]  # fmt: skip
+    if section is None:
+        return f"EI {member.flexural_rigidity:.4g} N·m² #{_digest(pieces)}"
+    size = f" {1e3 * section.depth:.0f} deep" if section.depth else ""
+    return f"{section.name}{size} #{_digest([pieces, _nine(section.area)])}"
+
+
+def _material(member: Member) -> str:
+    if member.material is None:
+        return "not stated"
+    m = member.material
+    strength = sorted((k, _nine(v)) for k, v in m.strength)
+    return f"{m.name} #{_digest([_nine(m.elastic_modulus), _nine(m.density), strength])}"
+
+
+def _support(support: Support) -> str:
+    values = (support.vertical, support.horizontal, support.rotation)
+    return "/".join("rigid" if math.isinf(v) else f"{v:.9g}" if v else "free" for v in values)
+
+
+def _actions(actions: Sequence[Action]) -> str:
+    """Count and digest; the order and the origin of the actions do not matter."""
+    rows = sorted(json.dumps(_action(action)) for action in actions)
+    return f"{len(rows)} #{_digest(rows)}"
+
+
+def _action(action: Action) -> list[object]:
+    row: list[object] = [type(action).__name__]
+    for field in fields(action):
+        value = getattr(action, field.name)
+        if field.name in ("source", "case"):
+            continue
+        if isinstance(value, tuple):
+            row.append([_nine(v) for v in value])
+        elif isinstance(action, JointForce | JointMovement) and field.name == "joint":
+            row.append(value)
+        else:
+            row.append(_nine(value))
+    return row
+
+
+def _join(texts: dict[str, str], key: str, text: str) -> None:
+    """An element cut into several members has the texts of all of them, each once."""
+    known = texts.get(key)
+    if known is None:
+        texts[key] = text
+    elif text not in known.split("; "):
+        texts[key] = f"{known}; {text}"
+
+
+def _micrometres(value: float) -> int:
+    return round(value * 1e6)
+
+
+def _nine(value: float) -> str:
+    return f"{value:.9g}" if value else "0"
+
+
+def _short(value: float) -> str:
+    return f"{value:.3f}".rstrip("0").rstrip(".")
+
+
+def _digest(data: object) -> str:
+    text = json.dumps(data, ensure_ascii=True)
+    return hashlib.sha256(text.encode("ascii")).hexdigest()[:10]

@@ -1,0 +1,168 @@
+"""The whole road: a file in, lines idealised, solved, combined, verified and posted.
+
+This is the one module that knows all the parts; the command line, the sheet and the add-on call
+it and nothing else.
+"""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, replace
+from pathlib import Path
+from typing import Any
+
+from analysis_core import idealise
+from analysis_core.errors import JobError
+from analysis_core.findings import Finding
+from analysis_core.ifc import source as ifc_source
+from analysis_core.model import LineModel
+from analysis_core.results import LineResult, Outcome
+from analysis_core.settings import Settings
+from analysis_core.solving import solve_model
+
+Progress = Callable[[str, float], None]
+
+
+@dataclass(frozen=True, slots=True)
+class Survey:
+    """What was found in a file, before anything is solved."""
+
+    file: str
+    schema: str
+    fingerprint: str
+    model: LineModel
+    findings: tuple[Finding, ...]
+
+
+def survey(
+    path: str | Path,
+    settings: Settings | None = None,
+    *,
+    progress: Progress | None = None,
+    only: Sequence[str] = (),
+) -> Survey:
+    """Read a file and idealise it.  ``only``: marks of the lines wanted, all where empty.
+
+    Raises IfcReadError, JobError.
+    """
+    settings = settings or Settings()
+    tell = progress or _silent
+    tell("Reading", 0.0)
+    source = ifc_source.open_model(path)
+    tell("Reading", 0.5)
+    building = _read(source, settings)
+    tell("Reading", 1.0)
+    model = idealise.idealise(building, settings)
+    findings = tuple(dict.fromkeys((*source.findings, *building.findings, *model.findings)))
+    model = replace(model, findings=findings, title=settings.title or model.title)
+    _check_marks(model, only)
+    return Survey(source.name, source.schema, source.fingerprint, model, findings)
+
+
+def run(
+    path: str | Path,
+    settings: Settings | None = None,
+    *,
+    progress: Progress | None = None,
+    only: Sequence[str] = (),
+) -> Outcome:
+    """Read, idealise, solve and envelope.  Raises IfcReadError, JobError.
+
+    A line that cannot be analysed never stops the others: its finding says why.
+    """
+    settings = settings or Settings()
+    found = survey(path, settings, progress=progress, only=only)
+    return solve(found, settings, progress=progress, only=only)
+
+
+def solve(
+    found: Survey,
+    settings: Settings,
+    *,
+    progress: Progress | None = None,
+    only: Sequence[str] = (),
+) -> Outcome:
+    """Solve what a survey found."""
+    tell = progress or _silent
+    model, results, findings, rules = solve_model(found.model, settings, tell)
+    if only:
+        results = tuple(r for r in results if r.line.mark in only)
+    return Outcome(
+        file=found.file,
+        schema=found.schema,
+        fingerprint=found.fingerprint,
+        model=_restricted(model, results) if only else model,
+        lines=results,
+        findings=tuple(dict.fromkeys((*found.findings, *findings))),
+        rules=rules,
+    )
+
+
+def post(
+    outcome: Outcome,
+    source: str | Path,
+    target: str | Path,
+    *,
+    progress: Progress | None = None,
+    analysis_model: bool = False,
+) -> Any:
+    """Write an outcome into a copy of its model, or the model itself.  Raises IfcWriteError."""
+    from analysis_core.ifc import writer  # posting is not always wanted; keep the start quick
+
+    return writer.post(source, target, outcome, analysis_model=analysis_model, progress=progress)
+
+
+def document(outcome: Outcome, *, stations: int = 21) -> dict[str, Any]:
+    """Return the results file as plain data."""
+    from analysis_core.results_file import results_document
+
+    return results_document(outcome, stations=stations)
+
+
+def survey_document(found: Survey) -> dict[str, Any]:
+    """Return a survey in the form of the results file, without results."""
+    lines = tuple(LineResult(line, "not analysed") for line in found.model.lines)
+    outcome = Outcome(
+        found.file, found.schema, found.fingerprint, found.model, lines, found.findings
+    )
+    return document(outcome)
+
+
+def rules_text(name: str | None) -> str:
+    """Return the list of rule sets, or one rule set in full.  Raises JobError."""
+    from analysis_core import rules
+
+    if name is None:
+        return "\n".join(f"{key:16} {rules.load(key).title}" for key in rules.names())
+    return rules.describe(rules.load(name))
+
+
+def _read(source: ifc_source.Source, settings: Settings) -> Any:
+    route = settings.analysis.route
+    if route == "auto":
+        route = "analytical" if source.has_analysis_model else "physical"
+    if route == "analytical":
+        from analysis_core.ifc.analytical import read_analytical
+
+        return read_analytical(source, settings)
+    from analysis_core.ifc.physical import read_physical
+
+    return read_physical(source, settings)
+
+
+def _check_marks(model: LineModel, only: Sequence[str]) -> None:
+    marks = [line.mark for line in model.lines]
+    for mark in only:
+        if mark not in marks:
+            near = difflib.get_close_matches(mark, marks, n=1, cutoff=0.0)
+            hint = f"; the nearest is '{near[0]}'" if near else "; it has no lines"
+            raise JobError(f"The model has no line '{mark}'{hint}.")
+
+
+def _restricted(model: LineModel, results: Sequence[LineResult]) -> LineModel:
+    return replace(model, lines=tuple(result.line for result in results))
+
+
+def _silent(step: str, part: float) -> None:
+    return None

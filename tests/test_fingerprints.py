@@ -1,0 +1,107 @@
+"""Fingerprints: the same whenever results must be the same, and reasons when they are not."""
+
+from dataclasses import replace
+
+import pytest
+
+from analysis_core.fingerprints import basis, differences, fingerprint
+from analysis_core.model import (
+    Combination,
+    DistributedForce,
+    Joint,
+    Line,
+    Material,
+    Member,
+    Piece,
+    Section,
+    Support,
+)
+from analysis_core.settings import Analysis, Settings
+
+SECTION = Section("R 300x500", "rectangle", 0.15, 3.125e-3, depth=0.5, width=0.3)
+CONCRETE = Material("C30/37", 33e9, density=2500.0)
+
+
+@pytest.fixture
+def line():
+    pinned = Support(vertical=float("inf"))
+    joints = (
+        Joint(0, 0.0, 0.0, support=pinned, element="W-1"),
+        Joint(1, 6.0, 0.0, support=pinned),
+        Joint(2, 10.5, 0.0, support=pinned),
+    )
+    members = tuple(
+        Member(i, i, i + 1, (Piece(length, (1.03e8,)),), element=f"B-{i}", span=i + 1,
+               section=SECTION, material=CONCRETE)
+        for i, length in enumerate((6.0, 4.5))
+    )  # fmt: skip
+    actions = (
+        DistributedForce("G", 0, 0.0, 6.0, (12e3,)),
+        DistributedForce("Q", 1, 0.0, 4.5, (8e3,)),
+    )
+    return Line("L1-01", joints, members, actions)
+
+
+def of(line, **changes):
+    given = {
+        "combinations": (Combination("U1", "strength", {"G": 1.35, "Q": 1.5}),),
+        "rules": "EN 1990",
+        "settings": Settings(),
+        "received": {"L1-02": "abc"},
+        **changes,
+    }
+    return basis(line, **given)
+
+
+@pytest.mark.parametrize(
+    "harmless",
+    [
+        lambda line: replace(line, mark="L1-07", origin=(1e6, 0.0, 3.6)),
+        lambda line: replace(line, actions=line.actions[::-1]),
+        lambda line: replace(line, actions=tuple(replace(a, source="x") for a in line.actions)),
+        lambda line: replace(
+            line, joints=(line.joints[0], replace(line.joints[1], x=6.0 + 1e-9), line.joints[2])
+        ),
+    ],
+)
+def test_what_cannot_change_the_results_does_not_change_the_fingerprint(line, harmless):
+    assert fingerprint(of(harmless(line))) == fingerprint(of(line))
+
+
+def test_a_deeper_section_is_named_with_both_depths(line):
+    deeper = replace(SECTION, name="R 300x600", depth=0.6)
+    member = replace(line.members[0], section=deeper)
+    after = of(replace(line, members=(member, line.members[1])))
+
+    sentences = differences(of(line), after, {"B-0": "B2-AB"})
+
+    assert len(sentences) == 1
+    assert sentences[0].startswith("section of B2-AB changed from R 300x500 500 deep")
+    assert "to R 300x600 600 deep" in sentences[0]
+
+
+@pytest.mark.parametrize(
+    ("change", "sentence"),
+    [
+        ({"received": {"L1-02": "other"}}, "L1-02, whose reactions it receives, changed"),
+        ({"received": {}}, "reactions of L1-02 changed"),
+        ({"rules": "ASCE 7-22"}, "rules changed from EN 1990 to ASCE 7-22"),
+        ({"settings": Settings(analysis=Analysis(shear_flexible=True))}, "settings changed"),
+        ({"combinations": ()}, "combinations changed"),
+    ],
+)
+def test_what_changes_the_results_is_named(line, change, sentence):
+    before, after = of(line), of(line, **change)
+    assert differences(before, after, {}) == [sentence]
+    assert fingerprint(before) != fingerprint(after)
+
+
+def test_a_new_action_and_another_support_are_named(line):
+    extra = DistributedForce("G", 1, 0.0, 2.0, (1e3,))
+    joints = (replace(line.joints[0], support=Support(float("inf"), 0.0, float("inf"))),)
+    after = replace(line, actions=(*line.actions, extra), joints=joints + line.joints[1:])
+
+    actions, support = differences(of(line), of(after), {})
+
+    assert actions.startswith("actions of G changed from 1 #")
+    assert support == "support at joint 0 changed from rigid/free/free to rigid/free/rigid"
