@@ -293,6 +293,8 @@ class Combination:
     kind: str = ""
     rule: str = ""
     source: str = ""
+    favourable: Mapping[str, float] = field(default_factory=dict)
+    """Factor of a case where its action is favourable; a case not named keeps its factor."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -315,6 +317,9 @@ class Line:
     """World point of x = z = 0."""
     axis: Point = (1.0, 0.0, 0.0)
     """World direction of x, horizontal."""
+    fault: str = ""
+    """Why the line must not be solved, "" where nothing speaks against it.  Where a member has
+    no rigidity, its pieces then hold 1 N·m² so that the line can be listed and drawn."""
 
     def __post_init__(self) -> None:
         _check_numbering(self)
