@@ -1,0 +1,1 @@
+"""Spanledger in FreeCAD: beam lines read from IFC, decided, balanced and posted."""

@@ -1,0 +1,91 @@
+"""The dock for one line: what is looked at, the strip, and what the chosen spot says."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from analysis_core.units import DisplayUnits
+
+from ..present.diagrams import View
+from ..present.strip import Strip
+from ..qt import QtCore, QtWidgets, Signal
+from ..texts import tr, translate
+from .canvas import Canvas
+
+
+class LineDesk(QtWidgets.QWidget):
+    """Chooser of the view above, canvas below."""
+
+    view_changed = Signal(object)
+    spot_picked = Signal(object)
+    quantity_changed = Signal(str)
+
+    def __init__(self, parent: Any = None) -> None:
+        super().__init__(parent)
+        self.title = QtWidgets.QLabel()
+        self.title.setObjectName("SpanledgerTitle")
+        self.view = QtWidgets.QComboBox()
+        self.view.setObjectName("SpanledgerView")
+        self.view.setSizeAdjustPolicy(QtWidgets.QComboBox.SizeAdjustPolicy.AdjustToContents)
+        self.view.setToolTip(translate("Spanledger", "Envelope, combination or load case"))
+        self.curves: dict[str, Any] = {}
+        top = QtWidgets.QHBoxLayout()
+        top.addWidget(self.view)
+        for quantity in ("moment", "shear", "deflection"):
+            box = QtWidgets.QCheckBox(tr(quantity.capitalize()))
+            box.setObjectName(f"SpanledgerShow_{quantity}")
+            box.setChecked(True)
+            box.toggled.connect(self._curves_changed)
+            self.curves[quantity] = box
+            top.addWidget(box)
+        self.in_3d = QtWidgets.QComboBox()
+        self.in_3d.setObjectName("SpanledgerIn3D")
+        for quantity in ("moment", "shear", "deflection"):
+            text = translate("Spanledger", "3D: {quantity}").format(quantity=tr(quantity))
+            self.in_3d.addItem(text, quantity)
+        self.in_3d.setToolTip(translate("Spanledger", "What the 3D view shows along all lines"))
+        top.addWidget(self.in_3d)
+        top.addStretch(1)
+        top.addWidget(self.title)
+        self.canvas = Canvas()
+        layout = QtWidgets.QVBoxLayout(self)
+        layout.setContentsMargins(4, 4, 4, 4)
+        layout.addLayout(top)
+        layout.addWidget(self.canvas, 1)
+        self.view.currentIndexChanged.connect(self._view_changed)
+        self.in_3d.currentIndexChanged.connect(
+            lambda _index: self.quantity_changed.emit(self.in_3d.currentData())
+        )
+        self.canvas.picked.connect(self.spot_picked)
+
+    def show_views(self, views: list[View]) -> None:
+        """Offer these views; the one that was chosen stays if it is among them."""
+        kept = self.current_view()
+        blocker = QtCore.QSignalBlocker(self.view)
+        self.view.clear()
+        for view in views:
+            self.view.addItem(f"{tr(_KINDS[view.kind])}: {view.name}", (view.kind, view.name))
+        if kept in views:
+            self.view.setCurrentIndex(views.index(kept))
+        del blocker
+
+    def current_view(self) -> View | None:
+        """Return what is looked at."""
+        data = self.view.currentData()
+        return View(*data) if data else None
+
+    def show_strip(self, strip: Strip | None, units: DisplayUnits) -> None:
+        """Show a line."""
+        self.title.setText(strip.title if strip else "")
+        self.canvas.show_strip(strip, units)
+
+    def _view_changed(self, _index: int) -> None:
+        view = self.current_view()
+        if view is not None:
+            self.view_changed.emit(view)
+
+    def _curves_changed(self, _on: bool) -> None:
+        self.canvas.show_quantities(tuple(q for q, box in self.curves.items() if box.isChecked()))
+
+
+_KINDS = {"envelope": "Envelope", "combination": "Combination", "case": "Case"}

@@ -1,0 +1,64 @@
+"""Links the choice of a line with FreeCAD's own selection, both ways."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import FreeCAD
+import FreeCADGui
+
+from .. import document
+
+
+class SelectionLink:
+    """An observer of FreeCAD's selection while the desk is shown."""
+
+    def __init__(self, desk: Any) -> None:
+        self.desk = desk
+        self._watching = False
+        self._busy = False
+
+    def start(self) -> None:
+        """Begin to watch."""
+        if not self._watching:
+            FreeCADGui.Selection.addObserver(self)
+            self._watching = True
+
+    def stop(self) -> None:
+        """Watch no longer."""
+        if self._watching:
+            FreeCADGui.Selection.removeObserver(self)
+            self._watching = False
+
+    def show(self, line: int | None) -> None:
+        """Mark a line in the 3D view and select its members."""
+        obj = document.find_beam_lines(FreeCAD.ActiveDocument)
+        if obj is None or self._busy:
+            return
+        view = obj.ViewObject.Proxy
+        view.choose(line)
+        self._busy = True
+        try:
+            FreeCADGui.Selection.clearSelection()
+            if line is not None:
+                for member in view.members_of(line):
+                    FreeCADGui.Selection.addSelection(
+                        obj.Document.Name, obj.Name, f"Member{member}"
+                    )
+        finally:
+            self._busy = False
+
+    def addSelection(self, doc: str, name: str, part: str, _point: Any) -> None:  # noqa: N802
+        """FreeCAD tells that something was selected."""
+        if self._busy or not part.startswith("Member"):
+            return
+        obj = FreeCAD.getDocument(doc).getObject(name)
+        if obj is not document.find_beam_lines(FreeCAD.getDocument(doc)):
+            return
+        line = obj.MemberLine[int(part.removeprefix("Member"))]
+        self._busy = True
+        try:
+            self.desk.choose_line(line)
+            obj.ViewObject.Proxy.choose(line)
+        finally:
+            self._busy = False

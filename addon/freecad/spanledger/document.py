@@ -1,0 +1,128 @@
+"""The document object that keeps the beam lines of one IFC model.
+
+The file and its GlobalIds are the truth; the object keeps what is drawn, so that a saved
+document shows it again, and opens even where the add-on is missing.  The module path of the class
+is written into saved documents: it must not change.  Works without a window.
+"""
+
+from __future__ import annotations
+
+from typing import Any
+
+import FreeCAD
+import numpy as np
+
+from .present.diagrams import Ordinates
+from .present.scene import Scene, diagram_height, scene_of, support_lines, symbol_size
+
+TYPE = "Spanledger::BeamLines"
+NAME = "BeamLines"
+
+_PROPERTIES = (
+    # type, name, group, description
+    ("App::PropertyFile", "IfcFile", "Model", "The IFC file that the lines were read from"),
+    ("App::PropertyFile", "JobFile", "Model", "The job file with the decisions"),
+    ("App::PropertyString", "Schema", "Model", "Schema of the IFC file"),
+    ("App::PropertyString", "Fingerprint", "Model", "Digest of the IFC file when it was read"),
+    ("App::PropertyStringList", "Marks", "Lines", "Mark of each line"),
+    ("App::PropertyStringList", "Storeys", "Lines", "Storey of each line"),
+    ("App::PropertyStringList", "States", "Lines", "State of each line"),
+    ("App::PropertyVectorList", "Ends", "Members", "Start and end of each member"),
+    ("App::PropertyVectorList", "Down", "Members", "Direction of positive deflection"),
+    ("App::PropertyIntegerList", "MemberLine", "Members", "Line that each member belongs to"),
+    ("App::PropertyStringList", "Elements", "Members", "GlobalId of each member's element"),
+    ("App::PropertyVectorList", "SupportPoints", "Supports", "Corners of the support symbols"),
+    ("App::PropertyIntegerList", "SupportCounts", "Supports", "Corners per polyline"),
+    ("App::PropertyString", "Shown", "Diagram", "What the diagram shows"),
+    ("App::PropertyString", "Quantity", "Diagram", "moment, shear or deflection"),
+    ("App::PropertyInteger", "Stations", "Diagram", "Ordinates per member"),
+    ("App::PropertyFloatList", "Upper", "Diagram", "Largest ordinates"),
+    ("App::PropertyFloatList", "Lower", "Diagram", "Smallest ordinates"),
+    ("App::PropertyFloat", "Height", "Diagram", "Millimetres drawn per unit of the ordinate"),
+)
+
+
+class BeamLines:
+    """Proxy of the document object; it keeps nothing itself."""
+
+    def __init__(self, obj: Any) -> None:
+        obj.Proxy = self
+        for kind, name, group, text in _PROPERTIES:
+            obj.addProperty(kind, name, group, text)
+            obj.setEditorMode(name, 1)  # shown, not typed into: the file is the truth
+
+    def execute(self, obj: Any) -> None:
+        """Nothing to recompute: the numbers come from a run."""
+
+    def dumps(self) -> None:
+        return None
+
+    def loads(self, _state: object) -> None:
+        return None
+
+    __getstate__ = dumps  # names of 0.20
+    __setstate__ = loads
+
+
+def add_beam_lines(document: Any) -> Any:
+    """Return a new, empty object in ``document``."""
+    obj = document.addObject("App::FeaturePython", NAME)
+    BeamLines(obj)
+    return obj
+
+
+def find_beam_lines(document: Any) -> Any | None:
+    """Return the object of ``document``, None where it has none."""
+    for obj in document.Objects if document else ():
+        if isinstance(getattr(obj, "Proxy", None), BeamLines):
+            return obj
+    return None
+
+
+def show_outcome(obj: Any, outcome: Any, states: list[str]) -> Scene:
+    """Write the lines of a run into the object; the diagram is emptied."""
+    scene = scene_of(outcome.model.lines)
+    polylines = support_lines(outcome.model, symbol_size(scene))
+    obj.Schema = outcome.schema
+    obj.Fingerprint = outcome.fingerprint
+    obj.Marks = list(scene.marks)
+    obj.Storeys = [line.storey or "" for line in outcome.model.lines]
+    obj.States = states
+    obj.Ends = _vectors(scene.ends.reshape(-1, 3))
+    obj.Down = _vectors(scene.down)
+    obj.MemberLine = scene.line_index.tolist()
+    obj.Elements = list(scene.elements)
+    obj.SupportPoints = _vectors(np.concatenate(polylines)) if polylines else []
+    obj.SupportCounts = [len(points) for points in polylines]
+    obj.Stations, obj.Upper, obj.Lower, obj.Shown = 0, [], [], ""
+    obj.Label = outcome.file
+    return scene
+
+
+def show_diagram(obj: Any, scene: Scene, ordinates: Ordinates) -> None:
+    """Write a diagram into the object, scaled to suit the spans."""
+    obj.Height = diagram_height(scene, ordinates.upper, ordinates.lower)
+    obj.Stations = int(ordinates.upper.shape[1])
+    obj.Quantity = ordinates.quantity
+    obj.Shown = ordinates.title
+    obj.Upper = ordinates.upper.ravel().tolist()
+    obj.Lower = ordinates.lower.ravel().tolist()
+
+
+def scene_in(obj: Any) -> Scene:
+    """Return the members that the object keeps."""
+    return Scene(
+        ends=_array(obj.Ends).reshape(-1, 2, 3),
+        down=_array(obj.Down),
+        line_index=np.array(obj.MemberLine, dtype=np.int64),
+        elements=tuple(obj.Elements),
+        marks=tuple(obj.Marks),
+    )
+
+
+def _vectors(points: np.ndarray) -> list[Any]:
+    return [FreeCAD.Vector(*point) for point in points.tolist()]
+
+
+def _array(vectors: Any) -> np.ndarray:
+    return np.array([tuple(v) for v in vectors], dtype=np.float64).reshape(-1, 3)

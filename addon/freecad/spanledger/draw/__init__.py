@@ -1,0 +1,1 @@
+"""Drawing in the 3D view with Coin; needs a window."""

@@ -1,0 +1,127 @@
+"""Coin nodes filled from NumPy arrays: a batch of lines, a batch of faces, a few labels."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from pivy import coin
+
+from ..present.scene import Filled
+
+Colour = tuple[float, float, float]
+MOST_LABELS = 60
+
+
+class Lines:
+    """A batch of polylines in one colour, on a wider casing where one is asked for.
+
+    The casing keeps lines readable on any ground, pale or dark.
+    """
+
+    def __init__(
+        self, colour: Colour, width: float, *, casing: Colour | None = None, pickable: bool = True
+    ) -> None:
+        self.node = coin.SoSeparator()
+        self._points = coin.SoCoordinate3()
+        self._lines = coin.SoIndexedLineSet()
+        self.node.addChild(self._points)
+        if casing is not None:
+            self.node.addChild(_stroke(casing, width + 3.0, self._lines, pickable=False))
+        self.node.addChild(_stroke(colour, width, self._lines, pickable=pickable))
+
+    def set_segments(self, ends: np.ndarray) -> None:
+        """Draw straight segments (n, 2, 3)."""
+        self.set_polylines(ends.reshape(-1, 3), [2] * len(ends))
+
+    def set_polylines(self, points: np.ndarray, counts: Sequence[int]) -> None:
+        """Draw polylines: all points (n, 3) in order, and how many belong to each."""
+        _set_points(self._points, points)
+        numbers = np.arange(len(points), dtype=np.int32)
+        ends = np.cumsum(np.asarray(counts, dtype=np.int64))
+        _set_index(self._lines.coordIndex, np.insert(numbers, ends, -1))
+
+
+class Faces:
+    """A batch of see-through triangles with the outline of their curve."""
+
+    def __init__(self, colour: Colour, transparency: float = 0.45) -> None:
+        self.node = coin.SoSeparator()
+        hints = coin.SoShapeHints()
+        hints.vertexOrdering = coin.SoShapeHints.UNKNOWN_ORDERING  # seen from both sides
+        material = coin.SoMaterial()
+        material.diffuseColor = colour
+        material.transparency = transparency
+        pick = coin.SoPickStyle()
+        pick.style = coin.SoPickStyle.UNPICKABLE
+        self._points, self._faces = coin.SoCoordinate3(), coin.SoIndexedFaceSet()
+        for node in (pick, hints, material, self._points, self._faces):
+            self.node.addChild(node)
+        self._outline = Lines(colour, 1.5, pickable=False)
+        self.node.addChild(self._outline.node)
+
+    def set_filled(self, drawn: Filled) -> None:
+        """Draw the triangles and the outline of a diagram."""
+        _set_points(self._points, drawn.triangles.reshape(-1, 3))
+        corners = np.arange(3 * len(drawn.triangles), dtype=np.int32).reshape(-1, 3)
+        ends = np.full((len(corners), 1), -1, dtype=np.int32)
+        _set_index(self._faces.coordIndex, np.hstack([corners, ends]).ravel())
+        self._outline.set_segments(drawn.outline)
+
+    def clear(self) -> None:
+        """Draw nothing."""
+        none = np.zeros((0, 3, 3))
+        self.set_filled(Filled(none, np.zeros(0, dtype=np.int64), np.zeros((0, 2, 3))))
+
+
+class Labels:
+    """A few texts at points, always facing the viewer."""
+
+    def __init__(self, colour: Colour) -> None:
+        self.node = coin.SoSeparator()
+        pick = coin.SoPickStyle()
+        pick.style = coin.SoPickStyle.UNPICKABLE
+        base, font = coin.SoBaseColor(), coin.SoFont()
+        base.rgb = colour
+        font.size = 15.0
+        for node in (pick, base, font):
+            self.node.addChild(node)
+        self._kept = self.node.getNumChildren()
+
+    def set(self, labels: Sequence[tuple[Sequence[float], str]]) -> None:
+        """Show texts at points (mm); no more than MOST_LABELS."""
+        while self.node.getNumChildren() > self._kept:
+            self.node.removeChild(self._kept)
+        for point, text in labels[:MOST_LABELS]:
+            place, place_of, words = coin.SoSeparator(), coin.SoTranslation(), coin.SoText2()
+            place_of.translation = tuple(point)
+            words.string = text
+            place.addChild(place_of)
+            place.addChild(words)
+            self.node.addChild(place)
+
+
+def _stroke(
+    colour: Colour, width: float, lines: coin.SoIndexedLineSet, *, pickable: bool
+) -> coin.SoSeparator:
+    stroke = coin.SoSeparator()
+    pick, base, style = coin.SoPickStyle(), coin.SoBaseColor(), coin.SoDrawStyle()
+    pick.style = coin.SoPickStyle.SHAPE if pickable else coin.SoPickStyle.UNPICKABLE
+    base.rgb = colour
+    style.lineWidth = width
+    for node in (pick, base, style, lines):
+        stroke.addChild(node)
+    return stroke
+
+
+def _set_points(node: coin.SoCoordinate3, points: np.ndarray) -> None:
+    # setNum first, or the tail of a longer former array stays.
+    node.point.setNum(len(points))
+    if len(points):
+        node.point.setValues(0, len(points), np.ascontiguousarray(points, dtype=np.float32))
+
+
+def _set_index(field: coin.SoMFInt32, values: np.ndarray) -> None:
+    field.setNum(len(values))
+    if len(values):
+        field.setValues(0, len(values), np.ascontiguousarray(values, dtype=np.int32))

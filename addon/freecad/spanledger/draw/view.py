@@ -1,0 +1,123 @@
+"""The view provider: all beam lines, supports and diagrams of a model as one batch of nodes.
+
+One line set and two face sets serve the whole building; one node per beam would be a hundred
+times slower.  A click on any part of a member answers with its component name "Member12".
+"""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+from pivy import coin
+
+from ..document import scene_in
+from ..present.look import VIEW
+from ..present.scene import Scene, filled
+from .nodes import Faces, Labels, Lines
+
+LINES, DIAGRAMS = "Lines", "Lines and diagrams"
+_ICON = "spanledger.svg"
+
+
+class BeamLinesView:
+    """View provider of ``document.BeamLines``; it keeps nodes only."""
+
+    def __init__(self, view_object: Any) -> None:
+        view_object.Proxy = self
+
+    def attach(self, view_object: Any) -> None:
+        """Build the nodes once; FreeCAD calls it on creation and on reopening."""
+        self.scene: Scene | None = None
+        self.chosen_line: int | None = None
+        palette = VIEW
+        self.lines = Lines(palette.parts("line"), 2.5, casing=palette.parts("ground"))
+        self.supports = Lines(palette.parts("support"), 1.5, pickable=False)
+        self.sagging = Faces(palette.parts("sagging"))
+        self.hogging = Faces(palette.parts("hogging"))
+        self.chosen = Lines(palette.parts("chosen"), 6.0, pickable=False)
+        self.labels = Labels(palette.parts("ink"))
+        plain, full = coin.SoSeparator(), coin.SoSeparator()
+        for root in (plain, full):
+            model = coin.SoLightModel()
+            model.model = coin.SoLightModel.BASE_COLOR
+            root.addChild(model)
+            for part in (self.chosen, self.lines, self.supports, self.labels):
+                root.addChild(part.node)
+        for faces in (self.sagging, self.hogging):
+            full.addChild(faces.node)
+        view_object.addDisplayMode(plain, LINES)
+        view_object.addDisplayMode(full, DIAGRAMS)
+        self.fill(view_object.Object)
+
+    def fill(self, obj: Any) -> None:
+        """Draw what the object keeps."""
+        self.scene = scene_in(obj)
+        self.lines.set_segments(self.scene.ends)
+        points = np.array([tuple(p) for p in obj.SupportPoints]).reshape(-1, 3)
+        self.supports.set_polylines(points, obj.SupportCounts)
+        self.fill_diagram(obj)
+        self.choose(None)
+
+    def fill_diagram(self, obj: Any) -> None:
+        """Draw the diagram that the object keeps: above and below the axis apart."""
+        count = len(self.scene.ends) if self.scene is not None else 0
+        if not obj.Stations or len(obj.Upper) != count * obj.Stations:
+            self.sagging.clear()
+            self.hogging.clear()
+            return
+        upper = np.array(obj.Upper).reshape(count, obj.Stations)
+        lower = np.array(obj.Lower).reshape(count, obj.Stations)
+        self.sagging.set_filled(filled(self.scene, upper, obj.Height, positive=True))
+        self.hogging.set_filled(filled(self.scene, lower, obj.Height, positive=False))
+
+    def choose(self, line: int | None, labels: list[tuple[Any, str]] | None = None) -> None:
+        """Mark one line, with texts at points; None marks nothing."""
+        self.chosen_line = line
+        which = np.zeros(0, dtype=int) if line is None else self.members_of(line)
+        self.chosen.set_segments(self.scene.ends[which])
+        self.labels.set(labels or [])
+
+    def members_of(self, line: int) -> np.ndarray:
+        """Return the rows of the members of a line."""
+        return np.nonzero(self.scene.line_index == line)[0]
+
+    def updateData(self, obj: Any, name: str) -> None:  # noqa: N802  # FreeCAD's name
+        if getattr(self, "scene", None) is None:
+            return
+        if name == "Lower":  # written last
+            self.fill_diagram(obj)
+        elif name == "SupportCounts":
+            self.fill(obj)
+
+    def getDisplayModes(self, _view_object: Any) -> list[str]:  # noqa: N802
+        return [LINES, DIAGRAMS]
+
+    def getDefaultDisplayMode(self) -> str:  # noqa: N802
+        return DIAGRAMS
+
+    def setDisplayMode(self, mode: str) -> str:  # noqa: N802
+        return mode
+
+    def useNewSelectionModel(self) -> bool:  # noqa: N802
+        return True
+
+    def getElement(self, detail: Any) -> str:  # noqa: N802
+        """Return the component that a picked detail belongs to; only lines can be picked."""
+        if detail.isOfType(coin.SoLineDetail.getClassTypeId()):
+            return f"Member{coin.cast(detail, 'SoLineDetail').getLineIndex()}"
+        return ""
+
+    def getIcon(self) -> str:  # noqa: N802
+        from ..resources import icon
+
+        return icon(_ICON)
+
+    def dumps(self) -> None:
+        return None
+
+    def loads(self, _state: object) -> None:
+        return None
+
+    __getstate__ = dumps  # names of 0.20
+    __setstate__ = loads

@@ -1,0 +1,350 @@
+"""Lays a strip out in pixels: the elevation above, a band per curve below, one common axis."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from itertools import pairwise
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis_core.units import DisplayUnits
+
+from .drawing import Drawing, Fill, Place, Spot, Stroke, Words
+from .strip import (
+    UNIT_OF,
+    Curve,
+    ShownAction,
+    Strip,
+    joint_places,
+    joint_words,
+    member_words,
+)
+from .symbols import support_symbol
+
+Floats = NDArray[np.float64]
+LEFT, RIGHT, TOP = 86.0, 40.0, 8.0
+SYMBOL = 13.0
+TITLES = {"moment": "Moment", "shear": "Shear", "deflection": "Deflection"}
+# Which way a positive value is drawn: moments on the side in tension, deflections as they go.
+DOWNWARD = {"moment": True, "shear": False, "deflection": True}
+MOST_ACTION_ROWS = 4
+
+Measure = Callable[[str], float]
+
+
+def lay_out(
+    strip: Strip,
+    width: float,
+    height: float,
+    units: DisplayUnits,
+    *,
+    measure: Measure = lambda text: 7.0 * len(text),
+    quantities: Sequence[str] = ("moment", "shear", "deflection"),
+    chosen: tuple[str, int] | None = None,
+) -> Drawing:
+    """Return the drawing of a strip for an area of ``width`` by ``height`` pixels.
+
+    ``measure`` gives the width of a text in pixels; ``chosen`` is the (kind, number) of the spot
+    that is being worked on.
+    """
+    length = max(s.end for s in strip.stretches)
+    drawing = Drawing(width, height, LEFT, max(width - LEFT - RIGHT, 40.0) / length)
+    shown = [q for q in quantities if q in strip.curves]
+    rows = _action_rows(strip.actions)
+    needed = TOP + 26.0 * len(rows) + 104.0
+    elevation = max(needed, 0.36 * height) if shown else height
+    _elevation(drawing, strip, rows, elevation, units, measure, chosen)
+    each = (height - elevation - 4.0) / max(len(shown), 1)
+    for number, quantity in enumerate(shown):
+        top = elevation + number * each
+        _band(drawing, strip, strip.curves[quantity], top, each, units, measure)
+    return drawing
+
+
+def _elevation(
+    drawing: Drawing,
+    strip: Strip,
+    rows: list[tuple[str, list[ShownAction]]],
+    height: float,
+    units: DisplayUnits,
+    measure: Measure,
+    chosen: tuple[str, int] | None,
+) -> None:
+    axis = height - 72.0
+    row_height = min(34.0, (axis - TOP - 22.0) / max(len(rows), 1))
+    for number, (case, actions) in enumerate(rows):
+        bottom = axis - 18.0 - row_height * (len(rows) - 1 - number)
+        _actions(drawing, strip, case, actions, bottom, row_height, measure)
+    _members(drawing, strip, axis, units, measure, chosen)
+    _joints(drawing, strip, axis, units, chosen)
+    _dimensions(drawing, strip, axis + 52.0, units, measure)
+
+
+def _members(
+    drawing: Drawing,
+    strip: Strip,
+    axis: float,
+    units: DisplayUnits,
+    measure: Measure,
+    chosen: tuple[str, int] | None,
+) -> None:
+    for stretch in strip.stretches:
+        left, right = drawing.to_pixel(stretch.start), drawing.to_pixel(stretch.end)
+        member = stretch.member
+        depth = drawing.scale * (member.section.depth if member.section else 0.0)
+        half = min(max(depth / 2.0, 2.0), 13.0)
+        role = "chosen" if chosen == ("member", member.id) else "line"
+        box = ((left, axis - half), (right, axis - half), (right, axis + half), (left, axis + half))
+        drawing.fills.append(Fill(box, role, 0.30))
+        drawing.strokes.append(Stroke((*box, box[0]), role, 2.4 if role == "chosen" else 1.4))
+        _ends(drawing, strip, stretch.member.id, left, right, axis)
+        words = member.section.name if member.section else "EI stated"
+        if measure(words) < right - left - 2.0 * SYMBOL:
+            middle = (left + right) / 2.0
+            drawing.words.append(Words(middle, axis + half + 10.0, words, "faint", small=True))
+        drawing.spots.append(
+            Spot(left, axis - 16.0, right, axis + 24.0, "member", member.id,
+                 member_words(member, units))
+        )  # fmt: skip
+
+
+def _ends(
+    drawing: Drawing, strip: Strip, member_id: int, left: float, right: float, axis: float
+) -> None:
+    """An open ring where a member's end is released, a ring with a bar where it is on a spring."""
+    member = strip.line.members[member_id]
+    for at, spring in ((left + 9.0, member.start_spring), (right - 9.0, member.end_spring)):
+        if np.isinf(spring):
+            continue
+        ring = tuple(
+            (at + 4.5 * np.cos(a), axis + 4.5 * np.sin(a)) for a in np.linspace(0, 2 * np.pi, 17)
+        )
+        drawing.fills.append(Fill(ring, "ground", 1.0))
+        drawing.strokes.append(Stroke(ring, "line", 1.6))
+        if spring > 0.0:
+            drawing.strokes.append(Stroke(((at - 4.5, axis), (at + 4.5, axis)), "line", 1.6))
+
+
+def _joints(
+    drawing: Drawing, strip: Strip, axis: float, units: DisplayUnits, chosen: tuple[str, int] | None
+) -> None:
+    for x, joint in joint_places(strip):
+        at = drawing.to_pixel(x)
+        role = "chosen" if chosen == ("joint", joint.id) else "support"
+        for polyline in support_symbol(joint.support):
+            points = tuple((at + SYMBOL * u, axis + 3.0 - SYMBOL * v) for u, v in polyline)
+            drawing.strokes.append(Stroke(points, role, 2.6 if role == "chosen" else 1.7))
+        drawing.words.append(Words(at, axis + 27.0, str(joint.id), role, bold=True, small=True))
+        drawing.spots.append(
+            Spot(at - SYMBOL, axis - 12.0, at + SYMBOL, axis + 34.0, "joint", joint.id,
+                 joint_words(joint, units))
+        )  # fmt: skip
+
+
+def _dimensions(
+    drawing: Drawing, strip: Strip, y: float, units: DisplayUnits, measure: Measure
+) -> None:
+    for stretch in strip.stretches:
+        left, right = drawing.to_pixel(stretch.start), drawing.to_pixel(stretch.end)
+        drawing.strokes.append(Stroke(((left, y), (right, y)), "faint", 1.0))
+        for at in (left, right):
+            drawing.strokes.append(Stroke(((at, y - 4.0), (at, y + 4.0)), "faint", 1.0))
+        words = units.number(stretch.member.length, "length")
+        if measure(words) < right - left - 4.0:
+            drawing.words.append(Words((left + right) / 2.0, y + 9.0, words, "ink", small=True))
+    drawing.words.append(Words(10.0, y + 9.0, units.symbol("length"), "faint", "left", small=True))
+
+
+def _action_rows(actions: Sequence[ShownAction]) -> list[tuple[str, list[ShownAction]]]:
+    by_case: dict[str, list[ShownAction]] = {}
+    for action in actions:
+        by_case.setdefault(action.case, []).append(action)
+    rows = list(by_case.items())
+    if len(rows) <= MOST_ACTION_ROWS:
+        return rows
+    rest = rows[MOST_ACTION_ROWS - 1 :]
+    return [*rows[: MOST_ACTION_ROWS - 1], (f"{len(rest)} more cases", [])]
+
+
+def _actions(
+    drawing: Drawing,
+    strip: Strip,
+    case: str,
+    actions: list[ShownAction],
+    bottom: float,
+    row_height: float,
+    measure: Measure,
+) -> None:
+    drawing.words.append(Words(10.0, bottom - 6.0, _short(case, 11), "action", "left", small=True))
+    largest = max((max(abs(a.low), abs(a.high)) for a in actions if a.kind == "spread"), default=0)
+    room = max(row_height - 16.0, 6.0)
+    taken: list[tuple[float, float]] = []
+    for action in actions:
+        left, right = drawing.to_pixel(action.start), drawing.to_pixel(action.end)
+        if action.kind == "spread":
+            _spread(drawing, action, left, right, bottom, room / largest if largest else 0.0)
+        else:
+            _single(drawing, action, left, right, bottom, room)
+        _label(drawing, action, (left + right) / 2.0, bottom - room - 6.0, measure, taken)
+        drawing.spots.append(
+            Spot(left - 4.0, bottom - room - 12.0, right + 4.0, bottom + 2.0, "action",
+                 strip.line.actions.index(action.action), f"{case}: {action.words}")
+        )  # fmt: skip
+
+
+def _label(
+    drawing: Drawing, action: ShownAction, x: float, y: float, measure: Measure,
+    taken: list[tuple[float, float]],
+) -> None:  # fmt: skip
+    half = measure(action.words) / 2.0
+    if any(x - half < right and x + half > left for left, right in taken):
+        return  # its words are in the tooltip
+    taken.append((x - half, x + half))
+    drawing.words.append(Words(x, y, action.words, "action", small=True))
+
+
+def _spread(
+    drawing: Drawing, action: ShownAction, left: float, right: float, bottom: float, scale: float
+) -> None:
+    low, high = (bottom - max(scale * abs(v), 2.0) for v in (action.low, action.high))
+    box = ((left, bottom), (left, low), (right, high), (right, bottom))
+    drawing.fills.append(Fill(box, "action", 0.16))
+    drawing.strokes.append(Stroke((*box, box[0]), "action", 1.0))
+    down = action.low + action.high >= 0.0
+    for x in np.linspace(left, right, max(int((right - left) / 34.0), 1) + 1):
+        _arrow_head(drawing, float(x), bottom if down else bottom - 5.0, down)
+
+
+def _single(
+    drawing: Drawing, action: ShownAction, left: float, right: float, bottom: float, room: float
+) -> None:
+    if action.kind == "couple":
+        turn = np.linspace(-2.4, 2.4, 15) if action.low >= 0.0 else np.linspace(2.4, -2.4, 15)
+        radius = room / 2.0
+        points = tuple(
+            (left + radius * np.sin(a), bottom - radius - radius * np.cos(a)) for a in turn
+        )
+        drawing.strokes.append(Stroke(points, "action", 1.6))
+        _head(drawing, points[-2], points[-1])
+        return
+    if action.kind == "curvature":
+        drawing.strokes.append(Stroke(((left, bottom), (right, bottom)), "action", 1.6, True))
+        return
+    if action.kind == "movement":
+        drawing.strokes.append(Stroke(((left, bottom - room), (left, bottom)), "action", 1.6, True))
+    else:
+        drawing.strokes.append(Stroke(((left, bottom - room), (left, bottom)), "action", 1.8))
+    _arrow_head(drawing, left, bottom, action.low >= 0.0)
+
+
+def _arrow_head(drawing: Drawing, x: float, y: float, down: bool) -> None:
+    side = -5.0 if down else 5.0
+    points = ((x - 3.0, y + side), (x, y), (x + 3.0, y + side))
+    drawing.strokes.append(Stroke(points, "action", 1.2))
+
+
+def _head(drawing: Drawing, before: Place, tip: Place) -> None:
+    direction = np.array(tip) - np.array(before)
+    direction /= np.hypot(*direction) or 1.0
+    across = np.array((-direction[1], direction[0]))
+    a, b = (np.array(tip) - 5.0 * direction + side * 3.0 * across for side in (1.0, -1.0))
+    drawing.strokes.append(Stroke((tuple(a), tip, tuple(b)), "action", 1.2))
+
+
+def _band(
+    drawing: Drawing,
+    strip: Strip,
+    curve: Curve,
+    top: float,
+    height: float,
+    units: DisplayUnits,
+    measure: Measure,
+) -> None:
+    drawing.fills.insert(
+        0, Fill(((0.0, top), (drawing.width, top), (drawing.width, top + height - 3.0),
+                 (0.0, top + height - 3.0)), "band", 1.0)
+    )  # fmt: skip
+    unit = units.symbol(UNIT_OF[curve.quantity])
+    drawing.words.append(Words(10.0, top + 12.0, TITLES[curve.quantity], "ink", "left", bold=True))
+    drawing.words.append(Words(10.0, top + 28.0, unit, "faint", "left", small=True))
+    base, scale = _scale(curve, top + 14.0, height - 31.0)
+    for stretch in strip.stretches:
+        left, right = drawing.to_pixel(stretch.start), drawing.to_pixel(stretch.end)
+        drawing.strokes.append(Stroke(((left, base), (right, base)), "faint", 1.0))
+    for x, _ in joint_places(strip):
+        at = drawing.to_pixel(x)
+        drawing.strokes.append(Stroke(((at, top + 4.0), (at, top + height - 7.0)), "rule", 1.0))
+    if curve.before is not None:
+        for values in curve.before:
+            for run in _runs(drawing, curve.x, values, base, scale):
+                drawing.strokes.append(Stroke(run, "before", 1.3, dashed=True))
+    _curve(drawing, curve, base, scale)
+    _peaks(drawing, curve, base, scale, top, height, measure)
+
+
+def _scale(curve: Curve, top: float, room: float) -> tuple[float, float]:
+    """Return the pixel of zero and pixels per unit, downward positive."""
+    sign = 1.0 if DOWNWARD[curve.quantity] else -1.0
+    parts = [curve.lower, curve.upper, *(curve.before or ())]
+    values = sign * np.concatenate([p[~np.isnan(p)] for p in parts])
+    least, most = min(float(values.min(initial=0.0)), 0.0), max(float(values.max(initial=0.0)), 0.0)
+    if most - least == 0.0:
+        return top + room / 2.0, 0.0
+    factor = room / (most - least)
+    return top - factor * least, sign * factor
+
+
+def _curve(drawing: Drawing, curve: Curve, base: float, scale: float) -> None:
+    for values, positive in ((curve.upper, True), (curve.lower, False)):
+        one_sided = np.maximum(values, 0.0) if positive else np.minimum(values, 0.0)
+        role = _role(curve.quantity, positive)
+        for run in _runs(drawing, curve.x, one_sided, base, scale):
+            polygon = ((run[0][0], base), *run, (run[-1][0], base))
+            hatched = curve.quantity == "moment" and not positive
+            drawing.fills.append(Fill(polygon, role, 0.22, hatched))
+        for run in _runs(drawing, curve.x, values, base, scale):
+            drawing.strokes.append(Stroke(run, role, 1.7))
+
+
+def _role(quantity: str, positive: bool) -> str:
+    if quantity != "moment":
+        return quantity
+    return "sagging" if positive else "hogging"
+
+
+def _runs(
+    drawing: Drawing, x: Floats, values: Floats, base: float, scale: float
+) -> list[tuple[Place, ...]]:
+    breaks = [-1, *np.nonzero(np.isnan(values))[0].tolist()]
+    if breaks[-1] != len(values) - 1:
+        breaks.append(len(values))
+    px, py = drawing.origin + drawing.scale * x, base + scale * values
+    return [
+        tuple(zip(px[a + 1 : b].tolist(), py[a + 1 : b].tolist(), strict=True))
+        for a, b in pairwise(breaks)
+        if b - a > 2
+    ]
+
+
+def _peaks(
+    drawing: Drawing, curve: Curve, base: float, scale: float, top: float, height: float,
+    measure: Measure,
+) -> None:  # fmt: skip
+    taken: list[tuple[float, float, float]] = []
+    for peak in sorted(curve.peaks, key=lambda p: -abs(p.value)):
+        x, y = drawing.to_pixel(peak.x), base + scale * peak.value
+        half = measure(peak.words) / 2.0
+        below = y >= base
+        words_y = min(max(y + (9.0 if below else -9.0), top + 8.0), top + height - 10.0)
+        left = min(max(x, LEFT - 30.0 + half), drawing.width - half - 4.0)
+        if any(abs(left - t[0]) < half + t[2] and abs(words_y - t[1]) < 12.0 for t in taken):
+            continue
+        taken.append((left, words_y, half + 3.0))
+        role = _role(curve.quantity, peak.value > 0.0)
+        drawing.strokes.append(Stroke(((x - 3.0, y), (x + 3.0, y)), role, 3.0))
+        drawing.words.append(Words(left, words_y, peak.words, role, bold=True, small=True))
+
+
+def _short(text: str, most: int) -> str:
+    return text if len(text) <= most else f"{text[: most - 1]}…"

@@ -1,0 +1,159 @@
+"""The list of lines: rows by storey with their state, filtered and sorted."""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Sequence
+from dataclasses import dataclass
+from typing import Literal
+
+from analysis_core.results import LineResult, Outcome
+from analysis_core.units import DisplayUnits
+
+State = Literal["needs a decision", "ready", "balanced", "stale", "posted"]
+STATES: tuple[State, ...] = ("needs a decision", "ready", "balanced", "stale", "posted")
+# A mark of its own shape for each state, so that none is told by colour alone.
+GLYPHS: dict[str, str] = {
+    "needs a decision": "?",
+    "ready": "○",
+    "balanced": "●",
+    "stale": "◐",
+    "posted": "■",
+}
+NO_STOREY = "No storey"
+COLUMNS = ("Line", "State", "Spans", "Sagging", "Hogging", "Shear", "Deflection")
+QUANTITY_OF = ("", "", "", "moment", "moment", "force", "deflection")
+
+
+@dataclass(frozen=True, slots=True)
+class Row:
+    """One line in the list.  ``values`` are SI and None where there is no result."""
+
+    index: int
+    mark: str
+    storey: str
+    state: State
+    spans: int
+    values: tuple[float | None, float | None, float | None, float | None]
+    texts: tuple[str, ...]
+    search: str
+    """What the filter looks through, in lower case."""
+
+
+@dataclass(frozen=True, slots=True)
+class Group:
+    """The rows of one storey."""
+
+    storey: str
+    rows: tuple[Row, ...]
+
+
+def rows_of(
+    outcome: Outcome,
+    units: DisplayUnits,
+    *,
+    stale: bool = False,
+    posted: Collection[str] = (),
+) -> list[Row]:
+    """Return a row per line.
+
+    ``stale``: the model or the decisions changed since the run.  ``posted`` are the fingerprints
+    of the results that were written into a file.
+    """
+    undecided = {f.line for f in outcome.findings if f.severity == "error" and f.line}
+    return [
+        _row(index, result, units, _state(result, result.line.mark in undecided, stale, posted))
+        for index, result in enumerate(outcome.lines)
+    ]
+
+
+def grouped(
+    rows: Sequence[Row],
+    *,
+    words: str = "",
+    states: Collection[str] = STATES,
+    column: int = 0,
+    descending: bool = False,
+) -> list[Group]:
+    """Return the rows that match, by storey in the order in which storeys first appear.
+
+    Every word of ``words`` must occur in the line's mark, storey, state or GlobalIds.
+    """
+    wanted = words.lower().split()
+    matching = [
+        row for row in rows if row.state in states and all(word in row.search for word in wanted)
+    ]
+    matching.sort(key=lambda row: _sort_key(row, column), reverse=descending)
+    storeys = dict.fromkeys(row.storey for row in rows)
+    by_storey: dict[str, list[Row]] = {storey: [] for storey in storeys}
+    for row in matching:
+        by_storey[row.storey].append(row)
+    return [Group(storey, tuple(found)) for storey, found in by_storey.items() if found]
+
+
+def _row(index: int, result: LineResult, units: DisplayUnits, state: State) -> Row:
+    line = result.line
+    spans = len({m.span for m in line.members if m.role == "span"}) or len(line.members)
+    values = _governing(result)
+    shown = tuple(
+        "–" if value is None else units.number(value, quantity)
+        for value, quantity in zip(values, QUANTITY_OF[3:], strict=True)
+    )
+    storey = line.storey or NO_STOREY
+    search = " ".join([line.mark, storey, state, *line.elements]).lower()
+    texts = (line.mark, f"{GLYPHS[state]} {state}", str(spans), *shown)
+    return Row(index, line.mark, storey, state, spans, values, texts, search)
+
+
+def _state(result: LineResult, undecided: bool, stale: bool, posted: Collection[str]) -> State:
+    if result.status != "balanced" and (undecided or result.status == "not analysed"):
+        return "needs a decision"
+    if result.solution is None:
+        return "ready"
+    if stale:
+        return "stale"
+    return "posted" if result.fingerprint and result.fingerprint in posted else "balanced"
+
+
+def _governing(
+    result: LineResult,
+) -> tuple[float | None, float | None, float | None, float | None]:
+    strength = result.envelopes.get("strength")
+    service = result.envelopes.get("serviceability", strength)
+    strength = strength or service
+    if strength is None or service is None or not strength.members:
+        return None, None, None, None
+    shears = [e.value for m in strength.members for e in (m.shear_max, m.shear_min)]
+    sags = [e.value for m in service.members for e in (m.deflection_down, m.deflection_up)]
+    return (
+        max(m.sagging.value for m in strength.members),
+        min(m.hogging.value for m in strength.members),
+        max(shears, key=abs),
+        max(sags, key=abs),
+    )
+
+
+def _sort_key(row: Row, column: int) -> tuple[object, ...]:
+    if column == 0:
+        return tuple(_natural(row.mark))
+    if column == 1:
+        return (STATES.index(row.state), *_natural(row.mark))
+    if column == 2:
+        return (row.spans, *_natural(row.mark))
+    value = row.values[column - 3]
+    return (value is not None, abs(value or 0.0), *_natural(row.mark))
+
+
+def _natural(text: str) -> list[tuple[int, int, str]]:
+    """Split digits from letters, so that L2 stands before L10."""
+    parts: list[tuple[int, int, str]] = []
+    word = ""
+    for char in text:
+        if word and word[-1].isdigit() != char.isdigit():
+            parts.append(_part(word))
+            word = ""
+        word += char
+    return [*parts, _part(word)] if word else parts
+
+
+def _part(word: str) -> tuple[int, int, str]:
+    return (0, int(word), "") if word.isdecimal() else (1, 0, word.lower())

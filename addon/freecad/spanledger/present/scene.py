@@ -1,0 +1,138 @@
+"""The beam lines of a run as flat arrays for the 3D view.
+
+Lengths in mm, as the 3D view has them; one row per member, all lines together, so that a
+whole building is drawn as one batch.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis_core.model import Line, LineModel, Support
+
+from .symbols import support_symbol
+
+Floats = NDArray[np.float64]
+Integers = NDArray[np.int64]
+MM = 1000.0
+SYMBOL_PART_OF_SPAN = 0.05
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Scene:
+    """Geometry of M members.
+
+    ends (M, 2, 3)  world points, mm;  down (M, 3)  unit vector of positive deflection
+    line_index (M,)  which line;  elements  GlobalId per member;  marks  mark per line
+    """
+
+    ends: Floats
+    down: Floats
+    line_index: Integers
+    elements: tuple[str, ...]
+    marks: tuple[str, ...]
+
+
+def scene_of(lines: Sequence[Line]) -> Scene:
+    """Return the members of all lines as arrays."""
+    ends, down, index, elements = [], [], [], []
+    for number, line in enumerate(lines):
+        for member in line.members:
+            ends.append((line.joints[member.start].point, line.joints[member.end].point))
+            cosine, sine = line.direction(member)
+            ax, ay, _ = line.axis
+            down.append((sine * ax, sine * ay, -cosine))
+            index.append(number)
+            elements.append(member.element)
+    return Scene(
+        ends=MM * np.array(ends, dtype=np.float64).reshape(-1, 2, 3),
+        down=np.array(down, dtype=np.float64).reshape(-1, 3),
+        line_index=np.array(index, dtype=np.int64),
+        elements=tuple(elements),
+        marks=tuple(line.mark for line in lines),
+    )
+
+
+def symbol_size(scene: Scene) -> float:
+    """Return a size in mm for symbols that suits the members drawn."""
+    if not len(scene.ends):
+        return 0.0
+    lengths = np.linalg.norm(scene.ends[:, 1] - scene.ends[:, 0], axis=1)
+    return float(SYMBOL_PART_OF_SPAN * np.median(lengths))
+
+
+def support_lines(model: LineModel, size: float) -> list[Floats]:
+    """Return the symbols of all supports as polylines (n, 3) in mm, in the plane of each line."""
+    drawn = []
+    for line in model.lines:
+        right = np.array(line.axis)
+        for joint in line.joints:
+            drawn += _placed(joint.support, MM * np.array(joint.point), right, size)
+    return drawn
+
+
+def _placed(support: Support | None, at: Floats, right: Floats, size: float) -> list[Floats]:
+    up = np.array((0.0, 0.0, 1.0))
+    return [
+        at + size * (np.outer(uv[:, 0], right) + np.outer(uv[:, 1], up))
+        for uv in (np.array(polyline) for polyline in support_symbol(support))
+    ]
+
+
+def diagram_height(scene: Scene, *ordinates: Floats) -> float:
+    """Return the factor from an ordinate to mm that makes the largest one a third of a span."""
+    largest = max((float(np.max(np.abs(o), initial=0.0)) for o in ordinates), default=0.0)
+    if largest == 0.0 or not len(scene.ends):
+        return 0.0
+    lengths = np.linalg.norm(scene.ends[:, 1] - scene.ends[:, 0], axis=1)
+    return float(np.median(lengths)) / 3.0 / largest
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Filled:
+    """A filled diagram: triangles between the axis and the curve, and the curve itself.
+
+    triangles (T, 3, 3) mm, with the member (T,) that each belongs to; outline (K, 2, 3) mm.
+    """
+
+    triangles: Floats
+    member: Integers
+    outline: Floats
+
+
+def filled(scene: Scene, ordinates: Floats, factor: float, *, positive: bool) -> Filled:
+    """Return the part of a diagram on one side of the axis.
+
+    ``ordinates`` (M, N) at N equal steps along each member, positive drawn along ``down``;
+    ``positive`` chooses the side.  A step in which the sign changes ends at its zero, so that
+    no face crosses itself.
+    """
+    signed = ordinates if positive else -ordinates
+    count, stations = ordinates.shape
+    x = np.linspace(0.0, 1.0, stations)
+    a, b = signed[:, :-1], signed[:, 1:]
+    member, step = np.nonzero((a > 0.0) | (b > 0.0))
+    a, b = a[member, step], b[member, step]
+    xa, xb = x[step], x[step + 1]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        zero = xa + (xb - xa) * a / (a - b)
+    start = np.where(a < 0.0, zero, xa)
+    stop = np.where(b < 0.0, zero, xb)
+    side = factor if positive else -factor
+    base_a, base_b = _along(scene, member, start), _along(scene, member, stop)
+    top_a = base_a + (side * np.maximum(a, 0.0))[:, None] * scene.down[member]
+    top_b = base_b + (side * np.maximum(b, 0.0))[:, None] * scene.down[member]
+    triangles = np.concatenate(
+        [np.stack([base_a, base_b, top_b], axis=1), np.stack([base_a, top_b, top_a], axis=1)]
+    )
+    return Filled(triangles, np.concatenate([member, member]), np.stack([top_a, top_b], axis=1))
+
+
+def _along(scene: Scene, member: Integers, part: Floats) -> Floats:
+    start, end = scene.ends[member, 0], scene.ends[member, 1]
+    moved: Floats = start + part[:, None] * (end - start)
+    return moved

@@ -1,0 +1,389 @@
+"""One line as the desk shows it: spans, bearings, actions, and curves for a chosen view.
+
+Positions run along the line: a span lies at its own place, legs follow behind the last span with
+a gap, so that every member has a stretch of the axis to itself.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis_core.model import (
+    Action,
+    DistributedForce,
+    ImposedCurvature,
+    Joint,
+    JointForce,
+    JointMovement,
+    Line,
+    Member,
+    PointForce,
+    PointMoment,
+)
+from analysis_core.results import Extreme, LineResult
+from analysis_core.units import DisplayUnits
+
+from .diagrams import Quantity, View, line_ordinates
+from .symbols import support_words
+
+Floats = NDArray[np.float64]
+QUANTITIES: tuple[Quantity, ...] = ("moment", "shear", "deflection")
+UNIT_OF: Mapping[str, str] = {"moment": "moment", "shear": "force", "deflection": "deflection"}
+CURVE_POINTS = 81
+
+
+@dataclass(frozen=True, slots=True)
+class Stretch:
+    """A member on the axis of the strip: from ``start`` to ``end``, m."""
+
+    member: Member
+    start: float
+    end: float
+
+    def to_axis(self, s: float) -> float:
+        """Return where position ``s`` of the member lies on the axis."""
+        return self.start + s
+
+
+@dataclass(frozen=True, slots=True)
+class ShownAction:
+    """An action with the words that tell what it is, and the stretch it acts on (m)."""
+
+    action: Action
+    case: str
+    words: str
+    start: float
+    end: float
+    low: float
+    high: float
+    """Intensity at start and end of the stretch, positive downward (0 where it has none)."""
+    kind: str
+    """"spread", "point", "couple", "curvature", "joint" or "movement"."""
+
+
+@dataclass(frozen=True, slots=True)
+class Peak:
+    """An extreme value worth a label."""
+
+    x: float
+    value: float
+    words: str
+    source: str
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Curve:
+    """A quantity along the axis (P,), broken between members by NaN; ``before`` where it moved."""
+
+    quantity: Quantity
+    x: Floats
+    lower: Floats
+    upper: Floats
+    peaks: tuple[Peak, ...]
+    before: tuple[Floats, Floats] | None = None
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Strip:
+    """Everything the desk draws of one line."""
+
+    line: Line
+    title: str
+    stretches: tuple[Stretch, ...]
+    actions: tuple[ShownAction, ...]
+    curves: Mapping[str, Curve] = field(default_factory=dict)
+    status: str = ""
+
+
+def strip_of(
+    result: LineResult,
+    view: View,
+    units: DisplayUnits,
+    *,
+    factors: Mapping[str, float] | None = None,
+    before: LineResult | None = None,
+) -> Strip:
+    """Return what is to be drawn of a line.
+
+    ``factors`` by case choose the actions shown (and multiply them in words); None shows all.
+    ``before`` is the same line in the run before, whose curves are drawn beside.
+    """
+    line = result.line
+    stretches = stretches_of(line)
+    curves = {}
+    for quantity in QUANTITIES:
+        curve = _curve(result, stretches, view, quantity, units)
+        if curve is not None:
+            curves[quantity] = _with_before(curve, before, view)
+    return Strip(
+        line=line,
+        title=_title(line, view),
+        stretches=stretches,
+        actions=tuple(_shown(a, line, stretches, units, factors) for a in _chosen(line, factors)),
+        curves=curves,
+        status=result.status,
+    )
+
+
+def stretches_of(line: Line) -> tuple[Stretch, ...]:
+    """Return the members in order along the axis of the strip."""
+    spans = [m for m in line.members if m.role == "span"] if line.kind == "line" else []
+    rest = [m for m in line.members if m not in spans]
+    first = min((line.joints[m.start].x for m in spans), default=0.0)
+    placed = []
+    for member in spans:
+        start = line.joints[member.start].x - first
+        placed.append(Stretch(member, start, start + member.length))
+    at = max((s.end for s in placed), default=0.0)
+    gap = 0.12 * max(at, max(m.length for m in line.members))
+    for member in rest:
+        at += gap if placed else 0.0
+        placed.append(Stretch(member, at, at + member.length))
+        at += member.length
+    return tuple(placed)
+
+
+def joint_places(strip: Strip) -> list[tuple[float, Joint]]:
+    """Return the joints with their places on the axis; a joint of several stretches once each."""
+    places: dict[tuple[float, int], Joint] = {}
+    for stretch in strip.stretches:
+        for x, end in ((stretch.start, stretch.member.start), (stretch.end, stretch.member.end)):
+            places[round(x, 6), end] = strip.line.joints[end]
+    return [(x, joint) for (x, _), joint in sorted(places.items(), key=lambda item: item[0])]
+
+
+def joint_words(joint: Joint, units: DisplayUnits) -> str:
+    """Return what holds a joint and why, for a tooltip."""
+    from analysis_core.tables import safe, support_text
+
+    parts = [f"Joint {joint.id}: {support_text(joint.support, units)}"]
+    if joint.reason:
+        parts.append(safe(joint.reason))
+    if joint.width:
+        parts.append(f"bearing {units.text(joint.width, 'section length')} wide")
+    if joint.element:
+        parts.append(f"element {safe(joint.element)}")
+    return "\n".join(parts)
+
+
+def member_words(member: Member, units: DisplayUnits) -> str:
+    """Return a member in words, for a tooltip."""
+    from analysis_core.tables import safe
+
+    parts = [f"Span {member.span}" if member.role == "span" else "Leg"]
+    parts[0] += f": {units.text(member.length, 'length')}"
+    if member.section:
+        parts.append(f"section {safe(member.section.name)}")
+    if member.material:
+        parts.append(f"material {safe(member.material.name)}")
+    parts.append(f"EI {units.text(member.flexural_rigidity, 'flexural rigidity')}")
+    parts.append(f"element {safe(member.element)}")
+    return "\n".join(parts)
+
+
+def values_at(strip: Strip, x: float, units: DisplayUnits) -> list[tuple[str, str]]:
+    """Return (quantity, words) of every curve at a place on the axis."""
+    rows = []
+    for quantity, curve in strip.curves.items():
+        known = ~np.isnan(curve.upper)
+        if not known.any() or not _inside(strip, x):
+            continue
+        low = float(np.interp(x, curve.x[known], curve.lower[known]))
+        high = float(np.interp(x, curve.x[known], curve.upper[known]))
+        unit = UNIT_OF[quantity]
+        if units.number(low, unit) == units.number(high, unit):
+            words = units.text(high, unit)
+        else:
+            words = f"{units.number(low, unit)} … {units.text(high, unit)}"
+        rows.append((quantity, words))
+    return rows
+
+
+def _inside(strip: Strip, x: float) -> bool:
+    return any(s.start <= x <= s.end for s in strip.stretches)
+
+
+def _title(line: Line, view: View) -> str:
+    spans = len({m.span for m in line.members if m.role == "span"})
+    where = f", {line.storey}" if line.storey else ""
+    words = "1 span" if spans == 1 else f"{spans} spans"
+    return f"{line.mark}{where}: {words}; {view.title}"
+
+
+def _chosen(line: Line, factors: Mapping[str, float] | None) -> list[Action]:
+    if factors is None:
+        return list(line.actions)
+    return [a for a in line.actions if factors.get(a.case, 0.0) != 0.0]
+
+
+def _shown(
+    action: Action,
+    line: Line,
+    stretches: tuple[Stretch, ...],
+    units: DisplayUnits,
+    factors: Mapping[str, float] | None,
+) -> ShownAction:
+    factor = 1.0 if factors is None else factors[action.case]
+    prefix = "" if factor == 1.0 else f"{factor:g} × "
+
+    def shown(
+        kind: str, words: str, start: float, end: float, low: float = 0.0, high: float = 0.0
+    ) -> ShownAction:
+        return ShownAction(action, action.case, prefix + words, start, end, low, high, kind)
+
+    if isinstance(action, JointForce | JointMovement):
+        at = _joint_axis(stretches, action.joint)
+        return shown(*_joint_action_words(action, units), at, at)
+    stretch = next(s for s in stretches if s.member.id == action.member)
+    if isinstance(action, DistributedForce):
+        low = action.transverse[0] if action.transverse else 0.0
+        high = _polynomial(action.transverse, action.end - action.start)
+        words = units.text(low, "line load")
+        if units.number(low, "line load") != units.number(high, "line load"):
+            words = f"{units.number(low, 'line load')} to {units.text(high, 'line load')}"
+        return shown(
+            "spread", words, stretch.to_axis(action.start), stretch.to_axis(action.end), low, high
+        )
+    if isinstance(action, PointForce):
+        at = stretch.to_axis(action.position)
+        return shown("point", units.text(action.transverse, "force"), at, at, action.transverse)
+    if isinstance(action, PointMoment):
+        at = stretch.to_axis(action.position)
+        return shown("couple", units.text(action.moment, "moment"), at, at, action.moment)
+    assert isinstance(action, ImposedCurvature)
+    words = f"curvature {action.curvature * 1e3:.3g} mrad/m"
+    return shown(
+        "curvature", words, stretch.to_axis(action.start), stretch.to_axis(action.end),
+        action.curvature, action.curvature,
+    )  # fmt: skip
+
+
+def _joint_action_words(action: JointForce | JointMovement, units: DisplayUnits) -> tuple[str, str]:
+    if isinstance(action, JointForce):
+        parts = []
+        if action.vertical:
+            parts.append(units.text(action.vertical, "force"))
+        if action.horizontal:
+            parts.append(f"{units.text(action.horizontal, 'force')} right")
+        if action.moment:
+            parts.append(units.text(action.moment, "moment"))
+        return "joint", ", ".join(parts) or "0"
+    parts = []
+    if action.vertical:
+        parts.append(f"moves down {units.text(action.vertical, 'deflection')}")
+    if action.horizontal:
+        parts.append(f"moves right {units.text(action.horizontal, 'deflection')}")
+    if action.rotation:
+        parts.append(f"turns {units.text(action.rotation, 'rotation')}")
+    return "movement", ", ".join(parts) or "0"
+
+
+def _joint_axis(stretches: tuple[Stretch, ...], joint: int) -> float:
+    for stretch in stretches:
+        if stretch.member.start == joint:
+            return stretch.start
+        if stretch.member.end == joint:
+            return stretch.end
+    return 0.0
+
+
+def _polynomial(coefficients: tuple[float, ...], v: float) -> float:
+    return float(sum(c * v**i for i, c in enumerate(coefficients)))
+
+
+def _curve(
+    result: LineResult,
+    stretches: tuple[Stretch, ...],
+    view: View,
+    quantity: Quantity,
+    units: DisplayUnits,
+) -> Curve | None:
+    pair = line_ordinates(result, view, quantity, CURVE_POINTS)
+    if pair is None:
+        return None
+    low, high = pair
+    x = np.concatenate([_axis_of(s) for s in stretches])
+    lower = np.concatenate([np.append(low[s.member.id], np.nan) for s in stretches])
+    upper = np.concatenate([np.append(high[s.member.id], np.nan) for s in stretches])
+    peaks = []
+    for stretch in stretches:
+        if view.kind == "envelope":
+            peaks += _envelope_peaks(result, stretch, view.name, quantity, units)
+        else:
+            peaks += _curve_peaks(stretch, high[stretch.member.id], quantity, view, units)
+    return Curve(quantity, x, lower, upper, tuple(_worth_labels(peaks)))
+
+
+def _axis_of(stretch: Stretch) -> Floats:
+    return np.append(np.linspace(stretch.start, stretch.end, CURVE_POINTS), stretch.end)
+
+
+def _envelope_peaks(
+    result: LineResult, stretch: Stretch, limit_state: str, quantity: Quantity, units: DisplayUnits
+) -> list[Peak]:
+    member = result.envelopes[limit_state].members[stretch.member.id]
+    found: tuple[Extreme, Extreme] = {
+        "moment": (member.sagging, member.hogging),
+        "shear": (member.shear_max, member.shear_min),
+        "deflection": (member.deflection_down, member.deflection_up),
+    }[quantity]
+    return [
+        Peak(stretch.to_axis(e.x), e.value, units.number(e.value, UNIT_OF[quantity]), e.source)
+        for e in found
+    ]
+
+
+def _curve_peaks(
+    stretch: Stretch, values: Floats, quantity: Quantity, view: View, units: DisplayUnits
+) -> list[Peak]:
+    # The exact extremes of a case are the solver's; between the drawn points these labels are
+    # within the thickness of the line.
+    along = np.linspace(stretch.start, stretch.end, len(values))
+    picked = {int(np.argmax(values)), int(np.argmin(values))}
+    return [
+        Peak(
+            float(along[i]),
+            float(values[i]),
+            units.number(float(values[i]), UNIT_OF[quantity]),
+            view.name,
+        )
+        for i in sorted(picked)
+    ]
+
+
+def _worth_labels(peaks: list[Peak]) -> list[Peak]:
+    """Drop values that are nothing beside the largest, and one of two in the same place."""
+    largest = max((abs(p.value) for p in peaks), default=0.0)
+    kept: list[Peak] = []
+    for peak in sorted(peaks, key=lambda p: -abs(p.value)):
+        if abs(peak.value) <= 0.02 * largest:
+            continue
+        if any(abs(peak.x - other.x) < 1e-6 and peak.words == other.words for other in kept):
+            continue
+        kept.append(peak)
+    return sorted(kept, key=lambda p: p.x)
+
+
+def _with_before(curve: Curve, before: LineResult | None, view: View) -> Curve:
+    if before is None:
+        return curve
+    pair = line_ordinates(before, view, curve.quantity, CURVE_POINTS)
+    if pair is None or pair[0].shape[0] * (CURVE_POINTS + 1) != len(curve.x):
+        return curve
+    order = [s.member.id for s in stretches_of(before.line)]
+    low, high = (np.concatenate([np.append(values[i], np.nan) for i in order]) for values in pair)
+    if np.allclose(low, curve.lower, equal_nan=True) and np.allclose(
+        high, curve.upper, equal_nan=True
+    ):
+        return curve
+    return Curve(curve.quantity, curve.x, curve.lower, curve.upper, curve.peaks, (low, high))
+
+
+__all__ = [
+    "Curve", "Peak", "ShownAction", "Stretch", "Strip", "joint_places", "joint_words",
+    "member_words", "stretches_of", "strip_of", "support_words", "values_at",
+]  # fmt: skip

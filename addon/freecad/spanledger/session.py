@@ -1,0 +1,129 @@
+"""One open model: its file, its job file, what was decided, and the run that came of it.
+
+Knows neither Qt nor FreeCAD.  A decision is a new text of the job file; undo and redo go through
+these texts, so that nothing else has to be reversible.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from pathlib import Path
+
+from analysis_core import job
+from analysis_core.errors import JobError
+from analysis_core.results import Outcome
+from analysis_core.settings import Settings
+from analysis_core.units import DisplayUnits, display_units
+
+
+@dataclass(slots=True)
+class Decision:
+    """A change of the job file: what it was called, and the texts on both sides of it."""
+
+    title: str
+    before: str
+    after: str
+
+
+@dataclass(slots=True)
+class Session:
+    """The state of one open model."""
+
+    path: Path
+    job_path: Path
+    text: str = ""
+    outcome: Outcome | None = None
+    previous: Outcome | None = None
+    """The run before the last decision, to show what moved."""
+    posted: set[str] = field(default_factory=set)
+    stale: bool = False
+    done: list[Decision] = field(default_factory=list)
+    undone: list[Decision] = field(default_factory=list)
+
+    @classmethod
+    def open(cls, path: str | Path, job_path: str | Path | None = None) -> Session:
+        """Start on a model, with the job file beside it where there is one.
+
+        Raises JobError where the job file cannot be read or understood.
+        """
+        path = Path(path)
+        job_path = Path(job_path) if job_path else job_beside(path)
+        text = _read(job_path) if job_path.exists() else ""
+        job.parse(text)
+        return cls(path, job_path, text)
+
+    @property
+    def settings(self) -> Settings:
+        """What the job file says now."""
+        return job.parse(self.text)
+
+    @property
+    def units(self) -> DisplayUnits:
+        """Units in which the engineer reads."""
+        display = self.settings.display
+        return display_units(display.system, display.units)
+
+    def decide(self, title: str, text: str) -> None:
+        """Take a changed job file, and write it.
+
+        Raises JobError where it is not understood or cannot be written; then nothing changed.
+        """
+        job.parse(text)
+        if text == self.text:
+            return
+        self._write(text)
+        self.done.append(Decision(title, self.text, text))
+        self.undone.clear()
+        self.text = text
+
+    def undo(self) -> str:
+        """Take the last decision back and return what it was called; "" where there is none."""
+        if not self.done:
+            return ""
+        self._write(self.done[-1].before)
+        decision = self.done.pop()
+        self.undone.append(decision)
+        self.text = decision.before
+        return decision.title
+
+    def redo(self) -> str:
+        """Take the decision that was undone last again; "" where there is none."""
+        if not self.undone:
+            return ""
+        self._write(self.undone[-1].after)
+        decision = self.undone.pop()
+        self.done.append(decision)
+        self.text = decision.after
+        return decision.title
+
+    def receive(self, outcome: Outcome) -> None:
+        """Take the outcome of a run."""
+        self.previous, self.outcome = self.outcome, outcome
+        self.stale = False
+
+    def _write(self, text: str) -> None:
+        beside = self.job_path.with_name(f".{self.job_path.name}.new")
+        try:
+            beside.write_text(text, encoding="utf-8")
+            beside.replace(self.job_path)
+        except OSError as error:
+            beside.unlink(missing_ok=True)
+            raise JobError(
+                f"The decision was not kept: '{self.job_path}' cannot be written "
+                f"({error.strerror or error}). Make the folder writable, or choose another job "
+                f"file."
+            ) from None
+
+
+def job_beside(path: Path) -> Path:
+    """Return where the job file of a model stands: the same name, ending in .yaml."""
+    return path.with_suffix(".yaml")
+
+
+def _read(path: Path) -> str:
+    try:
+        return path.read_text(encoding="utf-8-sig")
+    except OSError as error:
+        raise JobError(f"Job file '{path}' cannot be read: {error.strerror or error}.") from None
+    except UnicodeDecodeError:
+        raise JobError(f"Job file '{path}' is not UTF-8 text; save it as UTF-8.") from None

@@ -1,0 +1,8 @@
+"""Puts the add-on on the path, as FreeCAD does with its folder."""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+
+sys.path.insert(0, str(Path(__file__).resolve().parents[2] / "addon"))

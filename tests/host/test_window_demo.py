@@ -1,0 +1,14 @@
+"""The workbench in a real window, shown an outcome whose numbers are known."""
+
+import pytest
+
+pytestmark = pytest.mark.host
+
+
+def test_lines_and_diagrams_of_an_outcome_are_seen(in_freecad):
+    found = in_freecad("scenes_demo:draw")
+
+    assert found["shown"] == 2
+    assert found["line"] > 300  # pixels of a 1000 × 700 picture
+    assert found["sagging"] > 1000
+    assert found["hogging"] > 300
