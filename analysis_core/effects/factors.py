@@ -1,0 +1,196 @@
+"""Combinations as a table of lowest and highest factors of the parts of the cases.
+
+In one row of the table each part may take any factor between its two, whatever the others do:
+the largest effect of a row at a section is the sum over the parts of the larger of low times
+effect and high times effect.  A listed arrangement is a row in which both are equal.
+"""
+
+from __future__ import annotations
+
+import itertools
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis_core.effects.arrangements import Arrangements, Part, PatternRule, loaded_spans
+from analysis_core.model import Combination
+
+Floats = NDArray[np.float64]
+_NO_MATTER = 1e-9  # a part that contributes less than this of an effect is not named
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class FactorTable:
+    """N rows for C parts: low, high, stated (N, C), low <= high; the names behind them.
+
+    ``stated`` is the factor that the combination itself gives; ``labels`` name the listed
+    arrangement of a row, "" where none is.
+    """
+
+    names: tuple[str, ...]
+    labels: tuple[str, ...]
+    parts: tuple[Part, ...]
+    low: Floats
+    high: Floats
+    stated: Floats
+
+    @property
+    def fixed(self) -> bool:
+        """Whether no row leaves a choice."""
+        return bool(np.array_equal(self.low, self.high))
+
+    def chosen(self, row: int, contributions: Floats, *, largest: bool) -> Floats:
+        """Return the factors that give the largest (or least) effect: (C)."""
+        upward = contributions > 0.0 if largest else contributions < 0.0
+        return np.asarray(np.where(upward, self.high[row], self.low[row]))
+
+    def source(self, row: int, contributions: Floats, *, largest: bool) -> str:
+        """Return what governs: "U2 (Q on spans 1, 3)".
+
+        ``contributions`` (C) are the effects of the parts, unfactored, at the place of the extreme.
+        """
+        notes = [self.labels[row]] if self.labels[row] else []
+        if not np.array_equal(self.low[row], self.high[row]):
+            factors = self.chosen(row, contributions, largest=largest)
+            weight = np.abs(contributions) * np.maximum(np.abs(self.low), np.abs(self.high))[row]
+            matters = weight > _NO_MATTER * np.sum(weight)
+            notes += self._arrangement(row, factors, matters)
+        return f"{self.names[row]} ({'; '.join(notes)})" if notes else self.names[row]
+
+    def _arrangement(self, row: int, factors: Floats, matters: NDArray[np.bool_]) -> list[str]:
+        notes = []
+        for case, group in itertools.groupby(range(len(self.parts)), lambda c: self.parts[c].case):
+            own = [c for c in group if self.low[row, c] != self.high[row, c]]
+            on = [c for c in own if factors[c] == self.stated[row, c] and matters[c]]
+            if any(matters[c] for c in own) and not (len(own) == 1 and on):
+                notes.append(_note(case, self.parts, own, on, self._rest(row, own)))
+        return notes
+
+    def _rest(self, row: int, own: Sequence[int]) -> float:
+        """The share of the stated factor that the other parts keep."""
+        first = own[0]
+        stated = self.stated[row, first]
+        other = self.low[row, first] if stated == self.high[row, first] else self.high[row, first]
+        return float(other / stated) if stated else 0.0
+
+
+def factor_table(
+    combinations: Sequence[Combination],
+    parts: Sequence[Part],
+    arrangements: Arrangements,
+    spans: Sequence[int],
+) -> FactorTable:
+    """Return the table of ``combinations`` for the parts of a line with these span numbers.
+
+    A part of a case that is loaded span by span goes down to its share, a whole case to the
+    combination's favourable factor where it names one.  Equal rows are listed once.
+    """
+    rows: dict[tuple[tuple[float, ...], ...], tuple[str, str, list[float]]] = {}
+    for combination in combinations:
+        stated = [combination.factors.get(part.case, 0.0) for part in parts]
+        for label, low, high in _rows(combination, parts, arrangements, spans, stated):
+            key = tuple(low), tuple(high)
+            rows.setdefault(key, (combination.name, label, stated))
+    lows, highs = (np.array([key[i] for key in rows]) for i in (0, 1))
+    size = len(rows), len(parts)
+    return FactorTable(
+        names=tuple(name for name, _, _ in rows.values()),
+        labels=tuple(label for _, label, _ in rows.values()),
+        parts=tuple(parts),
+        low=np.minimum(lows, highs).reshape(size),
+        high=np.maximum(lows, highs).reshape(size),
+        stated=np.array([stated for _, _, stated in rows.values()]).reshape(size),
+    )
+
+
+def _rows(
+    combination: Combination,
+    parts: Sequence[Part],
+    arrangements: Arrangements,
+    spans: Sequence[int],
+    stated: list[float],
+) -> Iterator[tuple[str, list[float], list[float]]]:
+    listed = [
+        PatternRule(tuple(c for c in rule.cases if combination.factors.get(c)), rule.patterns,
+                    rule.elsewhere)
+        for rule in arrangements.listed
+    ]  # fmt: skip
+    listed = [rule for rule in listed if rule.cases]
+    whole = [
+        _whole_low(combination, part, factor) for part, factor in zip(parts, stated, strict=True)
+    ]
+    if listed:
+        for choice in itertools.product(*(_choices(rule, parts, spans) for rule in listed)):
+            low, high = list(whole), list(stated)
+            for rule, (_, loaded) in zip(listed, choice, strict=True):
+                for c, part in enumerate(parts):
+                    if part.case in rule.cases:
+                        share = _share(part, loaded, rule.elsewhere)
+                        low[c] = high[c] = share * stated[c]
+            yield "; ".join(label for label, _ in choice if label), low, high
+        return
+    shares = arrangements.shares
+    low = list(whole)
+    for c, part in enumerate(parts):
+        if part.case in shares and part.place:
+            low[c] = shares[part.case] * stated[c]
+    yield "", low, list(stated)
+    # A share that stays elsewhere belongs to an action that is there; it may be absent as well.
+    for case in {p.case for p in parts if shares.get(p.case) and p.place}:
+        if combination.factors.get(case):
+            yield (
+                f"without {case}",
+                [0.0 if p.case == case else v for p, v in zip(parts, low, strict=True)],
+                [0.0 if p.case == case else v for p, v in zip(parts, stated, strict=True)],
+            )
+
+
+def _whole_low(combination: Combination, part: Part, factor: float) -> float:
+    """The favourable factor of a variable action; permanent ones differ by combination."""
+    return min(combination.favourable.get(part.case, factor), factor, key=abs)
+
+
+def _choices(
+    rule: PatternRule, parts: Sequence[Part], spans: Sequence[int]
+) -> list[tuple[str, frozenset[int] | None]]:
+    """Each listed set once, with its label, and the choice of leaving the action out."""
+    out: dict[frozenset[int] | None, str] = {}
+    names = ", ".join(rule.cases)
+    for pattern in rule.patterns:
+        for loaded in loaded_spans(pattern, spans):
+            everywhere = len(loaded) == len(spans)
+            text = f"{names} on {'all spans' if everywhere else _spans(loaded)}"
+            if rule.elsewhere and not everywhere:
+                text += f", {rule.elsewhere:g} of it elsewhere"
+            out.setdefault(frozenset(loaded), text if len(spans) > 1 else "")
+    out.setdefault(None, f"without {names}")
+    return [(label, loaded) for loaded, label in out.items()]
+
+
+def _share(part: Part, loaded: frozenset[int] | None, elsewhere: float) -> float:
+    if loaded is None:
+        return 0.0
+    return 1.0 if part.span is None or part.span in loaded else elsewhere
+
+
+def _note(
+    case: str, parts: Sequence[Part], own: Sequence[int], on: Sequence[int], rest: float
+) -> str:
+    if len(on) == len(own):
+        return f"{case} on all spans"
+    if not on:
+        return f"without {case}" if not rest else f"{rest:g} of {case} on all spans"
+    places = [parts[c].place for c in on]
+    spans = [parts[c].span for c in on]
+    if all(places[i] == f"span {spans[i]}" for i in range(len(on))):
+        text = f"{case} on {_spans([s for s in spans if s is not None])}"
+    else:
+        text = f"{case} on {', '.join(places)}"
+    return f"{text}, {rest:.3g} of it elsewhere" if rest else text
+
+
+def _spans(numbers: Sequence[int]) -> str:
+    word = "span" if len(numbers) == 1 else "spans"
+    return f"{word} {', '.join(str(n) for n in numbers)}"
