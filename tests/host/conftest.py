@@ -50,7 +50,8 @@ def in_freecad(tmp_path, request):
         result = tmp_path / "result.json"
         result.unlink(missing_ok=True)
         log = tmp_path / "log.txt"
-        display = "-screen 0 1600x1000x24" if scale == "1" else "-screen 0 3200x2000x24"
+        size = "1600x1000" if scale == "1" else "3200x2000"
+        display = f"-screen 0 {size}x24 -dpi 96"  # at other densities Qt scales everything
         command = [
             "xvfb-run", "-a", "-s", display, "freecad", str(HERE / "zz_spanledger_scene.py"),
             "-M", str(ROOT / "addon"),

@@ -67,19 +67,18 @@ def picture_of_view(name, size=(1000, 700)):
 
 def count_pixels(image, colour, spread=40):
     """Return how many pixels are near a colour."""
-    count = 0
-    for y in range(image.height()):
-        for x in range(image.width()):
-            c = image.pixel(x, y)
-            parts = (c >> 16) & 255, (c >> 8) & 255, c & 255
-            if all(abs(p - q) <= spread for p, q in zip(parts, colour)):
-                count += 1
-    return count
+    import numpy as np
+
+    image = image.convertToFormat(QtGui.QImage.Format_RGB32)
+    pixels = np.frombuffer(image.constBits(), dtype=np.uint8).reshape(-1, 4)[:, 2::-1]
+    near = np.abs(pixels.astype(int) - np.array(colour)) <= spread
+    return int(near.all(axis=1).sum())
 
 
 def activate():
     """Choose the workbench as the user does, and return its desk."""
-    window().resize(1600, 1000)
+    window().showNormal()
+    window().setGeometry(0, 0, 1600, 1000)
     FreeCADGui.activateWorkbench("SpanledgerWorkbench")
     settle()
     from freecad.spanledger.desk import the_desk

@@ -9,10 +9,19 @@ from host_tools import activate, count_pixels, picture_of_screen, picture_of_vie
 sys.path.append(str(Path(__file__).resolve().parents[1] / "addon"))
 
 
+def on_white(palette, role):
+    """Return the colour of a role in a picture on white; diagrams are see-through."""
+    from freecad.spanledger.draw.nodes import TRANSPARENCY
+
+    through = TRANSPARENCY if role in ("sagging", "hogging") else 0.0
+    return [round((1.0 - through) * part + through * 255) for part in palette[role]]
+
+
 def draw():
     """Show an outcome: list, strip and diagrams."""
     desk = activate()
     import demo
+
     from freecad.spanledger.present.look import VIEW
     from freecad.spanledger.session import Session
 
@@ -25,5 +34,6 @@ def draw():
     picture_of_screen("demo_window")
     image = picture_of_view("demo_view")
     return {
-        role: count_pixels(image, VIEW[role], 60) for role in ("line", "sagging", "hogging")
+        role: count_pixels(image, on_white(VIEW, role), 12)
+        for role in ("line", "sagging", "hogging")
     } | {"shown": desk.list.model.shown()}

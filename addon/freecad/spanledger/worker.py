@@ -14,7 +14,7 @@ from .qt import QtCore, Signal
 Progress = Callable[[str, float], None]
 
 
-class Cancelled(Exception):
+class CancelledError(Exception):
     """The user stopped the work."""
 
 
@@ -42,7 +42,7 @@ class Work(QtCore.QThread):
 
         try:
             result = self._task(self._progress)
-        except Cancelled:
+        except CancelledError:
             self.cancelled.emit()
         except AnalysisError as error:
             self.failed.emit(str(error))
@@ -65,7 +65,7 @@ class Work(QtCore.QThread):
 
     def _progress(self, step: str, part: float) -> None:
         if self._stop:
-            raise Cancelled
+            raise CancelledError
         now = time.monotonic()
         if part >= 1.0 or now - self._told > 0.05:  # a signal per line would flood the window
             self._told = now

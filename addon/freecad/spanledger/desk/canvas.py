@@ -8,7 +8,7 @@ from analysis_core.units import DisplayUnits, display_units
 
 from ..present.drawing import Drawing, Spot
 from ..present.layout import lay_out
-from ..present.look import LIGHT, Palette, palette_for
+from ..present.look import Palette, palette_for
 from ..present.strip import Strip, values_at
 from ..qt import Qt, QtCore, QtGui, QtWidgets, Signal
 from ..texts import translate

@@ -61,6 +61,7 @@ class Desk(QtCore.QObject):
         """Show the docks, when the workbench is chosen."""
         for dock in (self.list_dock, self.strip_dock):
             dock.show()
+            dock.raise_()
         self.link.start()
 
     def disappear(self) -> None:
@@ -319,5 +320,12 @@ def _dock(window: Any, name: str, title: str, widget: Any, area: Any) -> Any:
     dock = QtWidgets.QDockWidget(title, window)
     dock.setObjectName(name)
     dock.setWidget(widget)
+    beside = [
+        other
+        for other in window.findChildren(QtWidgets.QDockWidget)
+        if other is not dock and other.isVisible() and window.dockWidgetArea(other) == area
+    ]
     window.addDockWidget(area, dock)
+    if beside:  # FreeCAD's own panels there stay one click away
+        window.tabifyDockWidget(beside[0], dock)
     return dock

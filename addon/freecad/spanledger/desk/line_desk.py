@@ -24,6 +24,10 @@ class LineDesk(QtWidgets.QWidget):
         super().__init__(parent)
         self.title = QtWidgets.QLabel()
         self.title.setObjectName("SpanledgerTitle")
+        self.title.setMinimumWidth(60)  # a long title must not widen the window
+        self.title.setSizePolicy(
+            QtWidgets.QSizePolicy.Policy.Ignored, QtWidgets.QSizePolicy.Policy.Preferred
+        )
         self.view = QtWidgets.QComboBox()
         self.view.setObjectName("SpanledgerView")
         self.view.setSizeAdjustPolicy(QtWidgets.QComboBox.SizeAdjustPolicy.AdjustToContents)
@@ -45,8 +49,7 @@ class LineDesk(QtWidgets.QWidget):
             self.in_3d.addItem(text, quantity)
         self.in_3d.setToolTip(translate("Spanledger", "What the 3D view shows along all lines"))
         top.addWidget(self.in_3d)
-        top.addStretch(1)
-        top.addWidget(self.title)
+        top.addWidget(self.title, 1)
         self.canvas = Canvas()
         layout = QtWidgets.QVBoxLayout(self)
         layout.setContentsMargins(4, 4, 4, 4)

@@ -11,6 +11,8 @@ from ..present.scene import Filled
 
 Colour = tuple[float, float, float]
 MOST_LABELS = 60
+TRANSPARENCY = 0.45
+DEPTH_STEP = 2e-4
 
 
 class Lines:
@@ -20,15 +22,21 @@ class Lines:
     """
 
     def __init__(
-        self, colour: Colour, width: float, *, casing: Colour | None = None, pickable: bool = True
+        self,
+        colour: Colour,
+        width: float,
+        *,
+        casing: Colour | None = None,
+        nearer: int = 2,
+        pickable: bool = True,
     ) -> None:
         self.node = coin.SoSeparator()
         self._points = coin.SoCoordinate3()
         self._lines = coin.SoIndexedLineSet()
         self.node.addChild(self._points)
         if casing is not None:
-            self.node.addChild(_stroke(casing, width + 3.0, self._lines, pickable=False))
-        self.node.addChild(_stroke(colour, width, self._lines, pickable=pickable))
+            self.node.addChild(_stroke(casing, width + 3.0, self._lines, nearer=1, pickable=False))
+        self.node.addChild(_stroke(colour, width, self._lines, nearer=nearer, pickable=pickable))
 
     def set_segments(self, ends: np.ndarray) -> None:
         """Draw straight segments (n, 2, 3)."""
@@ -45,7 +53,7 @@ class Lines:
 class Faces:
     """A batch of see-through triangles with the outline of their curve."""
 
-    def __init__(self, colour: Colour, transparency: float = 0.45) -> None:
+    def __init__(self, colour: Colour, transparency: float = TRANSPARENCY) -> None:
         self.node = coin.SoSeparator()
         hints = coin.SoShapeHints()
         hints.vertexOrdering = coin.SoShapeHints.UNKNOWN_ORDERING  # seen from both sides
@@ -102,9 +110,13 @@ class Labels:
 
 
 def _stroke(
-    colour: Colour, width: float, lines: coin.SoIndexedLineSet, *, pickable: bool
+    colour: Colour, width: float, lines: coin.SoIndexedLineSet, *, nearer: int, pickable: bool
 ) -> coin.SoSeparator:
     stroke = coin.SoSeparator()
+    # Lines over lines of the same place: each level lies a hair nearer to the eye.
+    depth = coin.SoDepthBuffer()
+    depth.range = (0.0, 1.0 - DEPTH_STEP * nearer)
+    stroke.addChild(depth)
     pick, base, style = coin.SoPickStyle(), coin.SoBaseColor(), coin.SoDrawStyle()
     pick.style = coin.SoPickStyle.SHAPE if pickable else coin.SoPickStyle.UNPICKABLE
     base.rgb = colour

@@ -35,7 +35,7 @@ class BeamLinesView:
         self.supports = Lines(palette.parts("support"), 1.5, pickable=False)
         self.sagging = Faces(palette.parts("sagging"))
         self.hogging = Faces(palette.parts("hogging"))
-        self.chosen = Lines(palette.parts("chosen"), 6.0, pickable=False)
+        self.chosen = Lines(palette.parts("chosen"), 4.5, nearer=3, pickable=False)
         self.labels = Labels(palette.parts("ink"))
         plain, full = coin.SoSeparator(), coin.SoSeparator()
         for root in (plain, full):

@@ -112,8 +112,7 @@ def filled(scene: Scene, ordinates: Floats, factor: float, *, positive: bool) ->
     no face crosses itself.
     """
     signed = ordinates if positive else -ordinates
-    count, stations = ordinates.shape
-    x = np.linspace(0.0, 1.0, stations)
+    x = np.linspace(0.0, 1.0, ordinates.shape[1])
     a, b = signed[:, :-1], signed[:, 1:]
     member, step = np.nonzero((a > 0.0) | (b > 0.0))
     a, b = a[member, step], b[member, step]
