@@ -82,7 +82,7 @@ def parse(text: str) -> Settings:
 def read_yaml(text: str) -> Any:
     """Return the plain data of a job file's text, unchecked.  Raises JobError."""
     try:
-        return yaml.load(text, Loader=_JobLoader)
+        return yaml.load(text, Loader=JobLoader)
     except yaml.YAMLError as error:
         raise JobError(f"It is not YAML: {' '.join(str(error).split())}.") from None
     except RecursionError:
@@ -96,7 +96,7 @@ def schema() -> dict[str, Any]:
     return loaded
 
 
-class _JobLoader(yaml.SafeLoader):
+class JobLoader(yaml.SafeLoader):
     """The safe loader with the booleans of YAML 1.2; it also refuses repeated keys and aliases.
 
     In YAML 1.1 the words on, off, yes and no are booleans; here they are words.  YAML keeps the
