@@ -1,0 +1,90 @@
+"""A line while it is being put together: joints and bars in a plane, before actions.
+
+Drafts are the only mutable data of ``idealise``; ``build`` turns each into a frozen ``Line``.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass, field
+
+from analysis_core.building import AxisMember
+from analysis_core.idealise.planes import Plane
+from analysis_core.model import FREE, RIGID, Kind, Role, Support
+
+
+@dataclass(slots=True)
+class DraftJoint:
+    """A joint of a draft; ``x``, ``z`` in its plane.  ``key`` tells it from every other place."""
+
+    x: float
+    z: float
+    key: str = ""
+    vertical: float = FREE
+    horizontal: float = FREE
+    rotation: float = FREE
+    element: str | None = None
+    elements: list[str] = field(default_factory=list)
+    reason: str = ""
+    width: float = 0.0
+
+    @property
+    def support(self) -> Support | None:
+        """The support, None where nothing holds the joint."""
+        if self.vertical == self.horizontal == self.rotation == FREE:
+            return None
+        return Support(self.vertical, self.horizontal, self.rotation)
+
+
+@dataclass(slots=True)
+class Bar:
+    """A stretch of one member between two joints.
+
+    ``station_start`` and ``station_end`` are the distances from the member's own start at both
+    ends of the bar; they may lie outside the member where a span is measured to the axis of a
+    bearing that the member, as drawn, does not reach.
+    """
+
+    member: AxisMember
+    start: int
+    end: int
+    station_start: float
+    station_end: float
+    start_spring: float = RIGID
+    end_spring: float = RIGID
+    role: Role = "span"
+    span: int | None = None
+
+
+@dataclass(slots=True)
+class Draft:
+    """A line or frame with its joints and bars.  ``faults``: why it cannot be solved."""
+
+    plane: Plane
+    kind: Kind
+    joints: list[DraftJoint]
+    bars: list[Bar]
+    mark: str = ""
+    storey: str | None = None
+    faults: list[str] = field(default_factory=list)
+
+    def length(self, bar: Bar) -> float:
+        """Return the distance between the joints of a bar in m."""
+        a, b = self.joints[bar.start], self.joints[bar.end]
+        return math.hypot(b.x - a.x, b.z - a.z)
+
+    def direction(self, bar: Bar) -> tuple[float, float]:
+        """Return the unit vector (right, up) from the start of a bar to its end."""
+        a, b = self.joints[bar.start], self.joints[bar.end]
+        size = self.length(bar)
+        return (b.x - a.x) / size, (b.z - a.z) / size
+
+    @property
+    def joint_of(self) -> dict[str, int]:
+        """Index of each joint by its key."""
+        return {joint.key: index for index, joint in enumerate(self.joints)}
+
+    @property
+    def elements(self) -> tuple[str, ...]:
+        """GlobalIds of the members, in the order of the bars."""
+        return tuple(dict.fromkeys(bar.member.global_id for bar in self.bars))

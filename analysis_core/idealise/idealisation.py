@@ -1,0 +1,99 @@
+"""The one road from ``Building`` and ``Settings`` to ``LineModel``."""
+
+from __future__ import annotations
+
+from analysis_core.building import Building
+from analysis_core.idealise.actions import put_axis_actions, put_node_actions
+from analysis_core.idealise.analytical import Scheme, analytical_scheme, let_carry
+from analysis_core.idealise.build import build
+from analysis_core.idealise.cases import cases_of, combinations_of, with_used
+from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.log import Log
+from analysis_core.idealise.placing import Placer
+from analysis_core.idealise.properties import PropertyTable
+from analysis_core.idealise.selectors import Chooser
+from analysis_core.idealise.self_weight import put_self_weight, weight_cases
+from analysis_core.idealise.temperature import put_temperature_actions
+from analysis_core.model import Action, Line, LineModel, Transfer
+from analysis_core.settings import Settings
+
+
+def idealise(building: Building, settings: Settings) -> LineModel:
+    """Return the lines and frames of a building with their supports, actions and cases.
+
+    Never raises for what a model may hold: a line that cannot be analysed carries the reason in
+    ``fault``, and a finding of severity "error" names it.
+    """
+    log = Log()
+    chooser = Chooser()
+    table = PropertyTable(settings, chooser)
+    weight = weight_cases(building, settings, log)
+    cases = cases_of(building, settings, weight, log)
+    scheme = analytical_scheme(building, settings, log)
+    chooser.marks = _marks(scheme.drafts)
+    let_carry(scheme, building, table, log)
+
+    members = {member.global_id: member for member in building.members}
+    placer = Placer(scheme.drafts)
+    put_axis_actions(building, placer, members, log)
+    put_node_actions(building, placer, scheme.carriers, log)
+    put_temperature_actions(building, placer, members, table, log)
+    put_self_weight(weight, placer, table, log)
+
+    used = [action.case for actions in placer.actions.values() for action in actions]
+    cases = with_used(cases, used, settings, log)
+    lines = _lines(scheme, placer.actions, table, settings, log)
+    transfers = _transfers(scheme, lines)
+    chooser.report_unused(log)
+    return LineModel(
+        lines=tuple(lines.values()),
+        cases=cases,
+        combinations=combinations_of(building, settings, cases, log),
+        transfers=transfers,
+        findings=building.findings + log.findings,
+        title=settings.title or building.name,
+    )
+
+
+def _marks(drafts: list[Draft]) -> dict[str, tuple[str, ...]]:
+    marks: dict[str, tuple[str, ...]] = {}
+    for draft in drafts:
+        for element in draft.elements:
+            marks[element] = (*marks.get(element, ()), draft.mark)
+    return marks
+
+
+def _lines(
+    scheme: Scheme,
+    actions: dict[int, list[Action]],
+    table: PropertyTable,
+    settings: Settings,
+    log: Log,
+) -> dict[str, Line]:
+    lines = {}
+    for number, draft in enumerate(scheme.drafts):
+        line = build(
+            draft,
+            actions.get(number, ()),
+            table,
+            shear_flexible=settings.analysis.shear_flexible,
+            log=log,
+        )
+        if line is not None:
+            lines[draft.mark] = line
+    return lines
+
+
+def _transfers(scheme: Scheme, lines: dict[str, Line]) -> tuple[Transfer, ...]:
+    transfers = []
+    for rest in scheme.rests:
+        if rest.carried.mark not in lines or rest.carrier.mark not in lines:
+            continue
+        joint = rest.carried.joint_of[rest.joint]
+        index = rest.carrier.joint_of[rest.at]
+        number, bar = next(
+            (n, b) for n, b in enumerate(rest.carrier.bars) if index in (b.start, b.end)
+        )
+        position = 0.0 if bar.start == index else lines[rest.carrier.mark].members[number].length
+        transfers.append(Transfer(rest.carried.mark, joint, rest.carrier.mark, number, position))
+    return tuple(transfers)
