@@ -9,14 +9,17 @@ import FreeCAD
 import FreeCADGui
 
 from .. import document
-from ..present.diagrams import View, ordinates_of, views_of
+from ..present.diagrams import ordinates_of, views_of
+from ..present.findings import finding_rows
 from ..present.listing import rows_of
+from ..present.moved import moved_words
 from ..present.scene import Scene
 from ..present.strip import strip_of
 from ..qt import Qt, QtCore, QtWidgets
 from ..session import Session
 from ..texts import translate
 from ..worker import Progress, Work
+from .findings_list import FindingsList
 from .line_desk import LineDesk
 from .line_list import LineList
 from .running import RunningBar
@@ -33,11 +36,18 @@ class Desk(QtCore.QObject):
         self.line: int | None = None
         self.work: Work | None = None
         window = FreeCADGui.getMainWindow()
-        self.running = RunningBar(window)
+        self.spot: tuple[str, int] | None = None
+        self.running = RunningBar()
         self.list = LineList()
+        self.findings = FindingsList()
+        self.tabs = QtWidgets.QTabWidget()
+        self.tabs.setObjectName("SpanledgerTabs")
+        self.tabs.addTab(self.list, translate("Spanledger", "Lines"))
+        self.tabs.addTab(self.findings, translate("Spanledger", "Findings"))
         self.strip = LineDesk()
         self.list_dock = _dock(
-            window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"), self.list,
+            window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
+            _stacked(self.tabs, self.running),
             Qt.DockWidgetArea.RightDockWidgetArea,
         )  # fmt: skip
         self.strip_dock = _dock(
@@ -47,6 +57,9 @@ class Desk(QtCore.QObject):
         self.list.chosen.connect(self.choose_line)
         self.strip.view_changed.connect(lambda _view: self.refresh_results())
         self.strip.quantity_changed.connect(lambda _quantity: self.refresh_diagram())
+        self.strip.canvas.picked.connect(self.choose_spot)
+        self.strip.inspector.decided.connect(self.decide)
+        self.findings.wanted.connect(self.show_finding)
         self.running.cancel_asked.connect(self.cancel)
         self.link = SelectionLink(self)
 
@@ -123,13 +136,23 @@ class Desk(QtCore.QObject):
         """Read the model again and balance it."""
         self._run(FreeCAD.ActiveDocument.Name)
 
+    def decide(self, title: str, change: Any) -> None:
+        """Take a decision: a change of the job file's text; and balance again."""
+        session = self.session
+        if session is None or self.work is not None:
+            self.tell(translate("Spanledger", "Something is still running; wait, or stop it."))
+            return
+        self._decide(lambda: session.decide(title, change(session.text)), title)
+
     def undo(self) -> None:
         """Take the last decision back."""
-        self._decide(self.session.undo)
+        title = translate("Spanledger", "Undone")
+        self._decide(self.session.undo, title)
 
     def redo(self) -> None:
         """Take a decision again."""
-        self._decide(self.session.redo)
+        title = translate("Spanledger", "Done again")
+        self._decide(self.session.redo, title)
 
     def ask_to_post(self) -> None:
         """Let the user choose where to write the results, and write them."""
@@ -174,6 +197,8 @@ class Desk(QtCore.QObject):
     # Showing.
     def choose_line(self, line: int | None) -> None:
         """Show a line in the list, the strip and the 3D view."""
+        if line != self.line:
+            self.spot = None
         self.line = line
         self.list.choose(line)
         self.refresh_strip()
@@ -208,6 +233,10 @@ class Desk(QtCore.QObject):
             return
         rows = rows_of(session.outcome, session.units, stale=session.stale, posted=session.posted)
         self.list.show_rows(rows, session.units)
+        found = finding_rows(session.outcome)
+        self.findings.show_rows(found)
+        title = translate("Spanledger", "Findings ({count})").format(count=len(found))
+        self.tabs.setTabText(1, title)
 
     def refresh_strip(self) -> None:
         """Show the chosen line."""
@@ -215,11 +244,44 @@ class Desk(QtCore.QObject):
         if session is None or session.outcome is None or self.line is None or view is None:
             return
         result = session.outcome.lines[self.line]
-        strip = strip_of(
-            result, view, session.units, factors=_factors(session, view),
-            before=_before(session, result.line.mark),
-        )  # fmt: skip
+        before = _before(session, result.line.mark)
+        strip = strip_of(result, view, session.units, before=before)
         self.strip.show_strip(strip, session.units)
+        self.strip.canvas.choose(self.spot)
+        self.refresh_inspector()
+
+    def refresh_inspector(self) -> None:
+        """Show the chosen spot of the chosen line."""
+        session, view = self.session, self.strip.current_view()
+        result = session.outcome.lines[self.line]
+        inspector, outcome, units = self.strip.inspector, session.outcome, session.units
+        kind, number = self.spot or ("", 0)
+        if kind == "joint" and number < len(result.line.joints):
+            inspector.show_joint(result, number, view, outcome, units)
+        elif kind == "member" and number < len(result.line.members):
+            inspector.show_member(result, number, outcome, units)
+        elif kind == "action" and number < len(result.line.actions):
+            shown = self.strip.canvas.strip.actions
+            action = result.line.actions[number]
+            words = next((a.words for a in shown if a.action is action), "")
+            inspector.show_action(result, number, words, session.text, units)
+        else:
+            inspector.show_line(result, outcome, units)
+
+    def choose_spot(self, spot: Any) -> None:
+        """Show a joint, a span or an action in the inspector; None shows the line."""
+        self.spot = None if spot is None else (spot.kind, spot.number)
+        if self.session is not None and self.session.outcome is not None and self.line is not None:
+            self.strip.canvas.choose(self.spot)
+            self.refresh_inspector()
+
+    def show_finding(self, row: Any) -> None:
+        """Choose the line that a finding is about, and look at it in the 3D view."""
+        if row.line is None:
+            self.tell(translate("Spanledger", "This finding is about no line that is drawn."))
+            return
+        self.choose_line(row.line)
+        self.link.look_at(row.line, row.elements)
 
     def refresh_diagram(self) -> None:
         """Show the diagrams of all lines in the 3D view."""
@@ -233,7 +295,7 @@ class Desk(QtCore.QObject):
         document.show_diagram(obj, self.scenes[active.Name], ordinates)
 
     # Running.
-    def _run(self, name: str) -> None:
+    def _run(self, name: str, title: str = "") -> None:
         from analysis_core import pipeline
 
         session = self.sessions[name]
@@ -247,11 +309,11 @@ class Desk(QtCore.QObject):
                 return  # the document was closed meanwhile
             session.receive(outcome)
             self.refresh_all(name)
-            self.running.clear()
+            self._tell_what_moved(session, title)
 
         self._start(task, done)
 
-    def _decide(self, change: Any) -> None:
+    def _decide(self, change: Any, title: str) -> None:
         from analysis_core.errors import AnalysisError
 
         try:
@@ -259,7 +321,15 @@ class Desk(QtCore.QObject):
         except AnalysisError as error:
             self.tell(str(error))
             return
-        self._run(FreeCAD.ActiveDocument.Name)
+        self._run(FreeCAD.ActiveDocument.Name, title)
+
+    def _tell_what_moved(self, session: Session, title: str) -> None:
+        if session.previous is None or self.line is None:
+            self.running.clear()
+            return
+        mark = session.outcome.lines[self.line].line.mark
+        words = moved_words(session.previous, session.outcome, mark, session.units)
+        self.tell(f"{title}. {words}" if title else words, problem=False)
 
     def _start(self, task: Any, done: Any) -> None:
         if self.work is not None:
@@ -293,15 +363,6 @@ class Desk(QtCore.QObject):
         return obj
 
 
-def _factors(session: Session, view: View) -> dict[str, float] | None:
-    if view.kind == "case":
-        return {view.name: 1.0}
-    if view.kind == "combination":
-        chosen = (c for c in session.outcome.model.combinations if c.name == view.name)
-        return dict(next(chosen).factors)
-    return None
-
-
 def _before(session: Session, mark: str) -> Any:
     if session.previous is None:
         return None
@@ -313,7 +374,17 @@ def _look_at_all(doc: Any) -> None:
     view = gui.activeView() if gui else None
     if view is not None and hasattr(view, "viewIsometric"):
         view.viewIsometric()
-        view.fitAll()
+        QtCore.QTimer.singleShot(0, view.fitAll)  # once the docks have taken their room
+
+
+def _stacked(*widgets: Any) -> Any:
+    body = QtWidgets.QWidget()
+    layout = QtWidgets.QVBoxLayout(body)
+    layout.setContentsMargins(0, 0, 0, 0)
+    layout.setSpacing(0)
+    for widget in widgets:
+        layout.addWidget(widget)
+    return body
 
 
 def _dock(window: Any, name: str, title: str, widget: Any, area: Any) -> Any:

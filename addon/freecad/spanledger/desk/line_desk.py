@@ -11,10 +11,11 @@ from ..present.strip import Strip
 from ..qt import QtCore, QtWidgets, Signal
 from ..texts import tr, translate
 from .canvas import Canvas
+from .inspector import Inspector
 
 
 class LineDesk(QtWidgets.QWidget):
-    """Chooser of the view above, canvas below."""
+    """Chooser of the view above, canvas and inspector below."""
 
     view_changed = Signal(object)
     spot_picked = Signal(object)
@@ -22,6 +23,7 @@ class LineDesk(QtWidgets.QWidget):
 
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
+        self._views: list[View] = []
         self.title = QtWidgets.QLabel()
         self.title.setObjectName("SpanledgerTitle")
         self.title.setMinimumWidth(60)  # a long title must not widen the window
@@ -54,7 +56,11 @@ class LineDesk(QtWidgets.QWidget):
         layout = QtWidgets.QVBoxLayout(self)
         layout.setContentsMargins(4, 4, 4, 4)
         layout.addLayout(top)
-        layout.addWidget(self.canvas, 1)
+        self.inspector = Inspector()
+        middle = QtWidgets.QHBoxLayout()
+        middle.addWidget(self.canvas, 1)
+        middle.addWidget(self.inspector)
+        layout.addLayout(middle, 1)
         self.view.currentIndexChanged.connect(self._view_changed)
         self.in_3d.currentIndexChanged.connect(
             lambda _index: self.quantity_changed.emit(self.in_3d.currentData())
@@ -64,18 +70,20 @@ class LineDesk(QtWidgets.QWidget):
     def show_views(self, views: list[View]) -> None:
         """Offer these views; the one that was chosen stays if it is among them."""
         kept = self.current_view()
+        self._views = views
         blocker = QtCore.QSignalBlocker(self.view)
         self.view.clear()
         for view in views:
-            self.view.addItem(f"{tr(_KINDS[view.kind])}: {view.name}", (view.kind, view.name))
-        if kept in views:
-            self.view.setCurrentIndex(views.index(kept))
-        del blocker
+            self.view.addItem(f"{tr(_KINDS[view.kind])}: {view.name}")
+        names = [(view.kind, view.name) for view in views]
+        if kept is not None and (kept.kind, kept.name) in names:
+            self.view.setCurrentIndex(names.index((kept.kind, kept.name)))
+        blocker.unblock()
 
     def current_view(self) -> View | None:
         """Return what is looked at."""
-        data = self.view.currentData()
-        return View(*data) if data else None
+        index = self.view.currentIndex()
+        return self._views[index] if 0 <= index < len(self._views) else None
 
     def show_strip(self, strip: Strip | None, units: DisplayUnits) -> None:
         """Show a line."""

@@ -1,35 +1,39 @@
-"""The bar in the status line: progress, a button to stop, and the last message."""
+"""Progress, a button to stop, and the last message, below the list of lines."""
 
 from __future__ import annotations
 
 from typing import Any
 
-from ..qt import QtWidgets, Signal
+from ..qt import Qt, QtWidgets, Signal
 from ..texts import tr, translate
 
 
 class RunningBar(QtWidgets.QWidget):
-    """Sits in FreeCAD's status bar, where it hides nothing."""
+    """Stands in a dock: in the status bar, FreeCAD's own messages would cover it."""
 
     cancel_asked = Signal()
 
-    def __init__(self, window: Any) -> None:
-        super().__init__(window)
+    def __init__(self, parent: Any = None) -> None:
+        super().__init__(parent)
         self.message = QtWidgets.QLabel()
         self.message.setObjectName("SpanledgerMessage")
+        self.message.setWordWrap(True)
+        self.message.setTextFormat(Qt.TextFormat.PlainText)
+        self.message.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         self.bar = QtWidgets.QProgressBar()
         self.bar.setObjectName("SpanledgerProgress")
         self.bar.setRange(0, 100)
-        self.bar.setMaximumWidth(220)
         self.stop = QtWidgets.QPushButton(translate("Spanledger", "Stop"))
         self.stop.setObjectName("SpanledgerStop")
         self.stop.clicked.connect(self.cancel_asked)
-        layout = QtWidgets.QHBoxLayout(self)
-        layout.setContentsMargins(0, 0, 0, 0)
-        for widget in (self.message, self.bar, self.stop):
-            layout.addWidget(widget)
+        row = QtWidgets.QHBoxLayout()
+        row.addWidget(self.bar, 1)
+        row.addWidget(self.stop)
+        layout = QtWidgets.QVBoxLayout(self)
+        layout.setContentsMargins(6, 2, 6, 4)
+        layout.addWidget(self.message)
+        layout.addLayout(row)
         self.end()
-        window.statusBar().addWidget(self, 1)
 
     def begin(self) -> None:
         """Show that work began."""

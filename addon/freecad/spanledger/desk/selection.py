@@ -48,6 +48,22 @@ class SelectionLink:
         finally:
             self._busy = False
 
+    def look_at(self, line: int, elements: tuple[str, ...]) -> None:
+        """Select the members meant, the whole line where none is named, and look at them."""
+        obj = document.find_beam_lines(FreeCAD.ActiveDocument)
+        if obj is None:
+            return
+        members = obj.ViewObject.Proxy.members_of(line)
+        meant = [m for m in members if obj.Elements[m] in elements] or list(members)
+        self._busy = True
+        try:
+            FreeCADGui.Selection.clearSelection()
+            for member in meant:
+                FreeCADGui.Selection.addSelection(obj.Document.Name, obj.Name, f"Member{member}")
+        finally:
+            self._busy = False
+        obj.ViewObject.Proxy.look_at(FreeCADGui.ActiveDocument.ActiveView, meant)
+
     def addSelection(self, doc: str, name: str, part: str, _point: Any) -> None:  # noqa: N802
         """FreeCAD tells that something was selected."""
         if self._busy or not part.startswith("Member"):

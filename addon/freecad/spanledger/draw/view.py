@@ -82,6 +82,16 @@ class BeamLinesView:
         """Return the rows of the members of a line."""
         return np.nonzero(self.scene.line_index == line)[0]
 
+    def look_at(self, view: Any, members: list[int]) -> None:
+        """Move the camera so that it shows these members, from where it looks now."""
+        points = self.scene.ends[members].reshape(-1, 3)
+        low, high = points.min(axis=0), points.max(axis=0)
+        margin = 0.15 * float(np.linalg.norm(high - low))
+        box = coin.SbBox3f(*(low - margin).tolist(), *(high + margin).tolist())
+        window = view.getViewer().getSoRenderManager()
+        window.getCamera().viewBoundingBox(box, window.getViewportRegion().getViewportAspectRatio(),
+                                           1.0)  # fmt: skip
+
     def updateData(self, obj: Any, name: str) -> None:  # noqa: N802  # FreeCAD's name
         if getattr(self, "scene", None) is None:
             return

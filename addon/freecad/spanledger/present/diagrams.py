@@ -12,7 +12,8 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.results import LineResult, Outcome
+from analysis_core.model import Combination
+from analysis_core.results import LineEnvelope, LineResult, Outcome
 
 Floats = NDArray[np.float64]
 Quantity = Literal["moment", "shear", "deflection"]
@@ -21,10 +22,14 @@ STATIONS = 21
 
 @dataclass(frozen=True, slots=True)
 class View:
-    """What is looked at: ``kind`` and the name of the case, combination or limit state."""
+    """What is looked at: ``kind`` and the name of the case, combination or limit state.
+
+    ``factors`` by case make the view up; an envelope has none.
+    """
 
     kind: Literal["case", "combination", "envelope"]
     name: str
+    factors: tuple[tuple[str, float], ...] = ()
 
     @property
     def title(self) -> str:
@@ -53,9 +58,35 @@ def views_of(outcome: Outcome) -> list[View]:
         if any(name in result.envelopes for result in outcome.lines)
     ]
     views = [View("envelope", name) for name in limit_states]
-    views += [View("combination", c.name) for c in outcome.model.combinations]
-    views += [View("case", case.name) for case in outcome.model.cases]
+    views += [
+        View("combination", c.name, tuple(c.factors.items())) for c in outcome.model.combinations
+    ]
+    views += [View("case", case.name, ((case.name, 1.0),)) for case in outcome.model.cases]
     return views
+
+
+def view_envelopes(
+    results: Sequence[LineResult], view: View, stations: int = STATIONS
+) -> list[LineEnvelope | None]:
+    """Return curves and exact extremes of each line for a view; None where it has no result.
+
+    Of a single case or combination the lower and the upper curve are the same.
+    """
+    if view.kind == "envelope":
+        return [result.envelopes.get(view.name) for result in results]
+    from analysis_core.effects.arrangements import whole_cases
+    from analysis_core.effects.envelopes import envelopes  # late: start-up of the workbench
+
+    known = [i for i, result in enumerate(results) if result.solution is not None]
+    solutions = [results[i].solution for i in known]
+    found: list[LineEnvelope | None] = [None] * len(results)
+    if known:
+        one = Combination(view.name, "strength", dict(view.factors))
+        lines = [whole_cases(s.line, s.cases) for s in solutions]
+        curves = envelopes(lines, solutions, [one], limit_state="strength", count=stations)
+        for i, curve in zip(known, curves, strict=True):
+            found[i] = curve
+    return found
 
 
 def ordinates_of(
@@ -63,10 +94,11 @@ def ordinates_of(
 ) -> Ordinates:
     """Return the ordinates of every member, zero where a line was not analysed."""
     lower, upper = [], []
-    for result in results:
-        count = len(result.line.members)
-        pair = line_ordinates(result, view, quantity, stations)
-        low, high = pair if pair is not None else (np.zeros((count, stations)),) * 2
+    for result, envelope in zip(results, view_envelopes(results, view, stations), strict=True):
+        if envelope is None:
+            low = high = np.zeros((len(result.line.members), stations))
+        else:
+            low, high = line_ordinates(envelope, quantity, stations)
         lower.append(low)
         upper.append(high)
     empty = np.zeros((0, stations))
@@ -79,27 +111,9 @@ def ordinates_of(
 
 
 def line_ordinates(
-    result: LineResult, view: View, quantity: Quantity, stations: int = STATIONS
-) -> tuple[Floats, Floats] | None:
-    """Return lower and upper ordinates (M, N) of one line, None where it has no such result."""
-    if view.kind == "envelope":
-        return _from_envelope(result, view.name, quantity, stations)
-    from analysis_core.effects import stations as along  # late: start-up of the workbench
-
-    solution = result.solution if view.kind == "case" else result.combined
-    if solution is None or view.name not in solution.cases:
-        return None
-    found = along(solution.line, solution, stations)
-    values: Floats = getattr(found, quantity)[found.names.index(view.name)]
-    return values, values
-
-
-def _from_envelope(
-    result: LineResult, limit_state: str, quantity: Quantity, stations: int
-) -> tuple[Floats, Floats] | None:
-    envelope = result.envelopes.get(limit_state)
-    if envelope is None:
-        return None
+    envelope: LineEnvelope, quantity: Quantity, stations: int
+) -> tuple[Floats, Floats]:
+    """Return lower and upper ordinates (M, N) of one line, at equal steps along each member."""
     low, high = np.empty((2, len(envelope.members), stations))
     for row, member in enumerate(envelope.members):
         least, most = {
@@ -107,6 +121,9 @@ def _from_envelope(
             "shear": (member.shear_min_at, member.shear_max_at),
             "deflection": (member.deflection_min, member.deflection_max),
         }[quantity]
-        at = np.linspace(0.0, member.x[-1], stations)
-        low[row], high[row] = np.interp(at, member.x, least), np.interp(at, member.x, most)
+        if len(member.x) == stations:
+            low[row], high[row] = least, most
+        else:
+            at = np.linspace(0.0, member.x[-1], stations)
+            low[row], high[row] = np.interp(at, member.x, least), np.interp(at, member.x, most)
     return low, high

@@ -93,7 +93,7 @@ def grouped(
 def _row(index: int, result: LineResult, units: DisplayUnits, state: State) -> Row:
     line = result.line
     spans = len({m.span for m in line.members if m.role == "span"}) or len(line.members)
-    values = _governing(result)
+    values = governing(result)
     shown = tuple(
         "–" if value is None else units.number(value, quantity)
         for value, quantity in zip(values, QUANTITY_OF[3:], strict=True)
@@ -114,9 +114,10 @@ def _state(result: LineResult, undecided: bool, stale: bool, posted: Collection[
     return "posted" if result.fingerprint and result.fingerprint in posted else "balanced"
 
 
-def _governing(
+def governing(
     result: LineResult,
 ) -> tuple[float | None, float | None, float | None, float | None]:
+    """Return (sagging, hogging, shear, deflection) over a line, SI; None where there is none."""
     strength = result.envelopes.get("strength")
     service = result.envelopes.get("serviceability", strength)
     strength = strength or service

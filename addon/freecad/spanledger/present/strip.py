@@ -6,8 +6,8 @@ a gap, so that every member has a stretch of the axis to itself.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from dataclasses import dataclass, field
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -24,16 +24,16 @@ from analysis_core.model import (
     PointForce,
     PointMoment,
 )
-from analysis_core.results import Extreme, LineResult
+from analysis_core.results import Extreme, LineEnvelope, LineResult
 from analysis_core.units import DisplayUnits
 
-from .diagrams import Quantity, View, line_ordinates
+from .diagrams import Quantity, View, line_ordinates, view_envelopes
 from .symbols import support_words
 
 Floats = NDArray[np.float64]
 QUANTITIES: tuple[Quantity, ...] = ("moment", "shear", "deflection")
 UNIT_OF: Mapping[str, str] = {"moment": "moment", "shear": "force", "deflection": "deflection"}
-CURVE_POINTS = 81
+CURVE_POINTS = 161
 
 
 @dataclass(frozen=True, slots=True)
@@ -97,6 +97,9 @@ class Strip:
     actions: tuple[ShownAction, ...]
     curves: Mapping[str, Curve] = field(default_factory=dict)
     status: str = ""
+    sampled: bool = False
+    """Whether the curves are known at few stations only (an envelope), so that values between
+    them are near and not exact."""
 
 
 def strip_of(
@@ -104,21 +107,23 @@ def strip_of(
     view: View,
     units: DisplayUnits,
     *,
-    factors: Mapping[str, float] | None = None,
     before: LineResult | None = None,
 ) -> Strip:
     """Return what is to be drawn of a line.
 
-    ``factors`` by case choose the actions shown (and multiply them in words); None shows all.
+    An envelope shows all actions, a combination those of its cases with their factors.
     ``before`` is the same line in the run before, whose curves are drawn beside.
     """
     line = result.line
     stretches = stretches_of(line)
     curves = {}
-    for quantity in QUANTITIES:
-        curve = _curve(result, stretches, view, quantity, units)
-        if curve is not None:
-            curves[quantity] = _with_before(curve, before, view)
+    (envelope,) = view_envelopes([result], view, CURVE_POINTS)
+    old = view_envelopes([before], view, CURVE_POINTS)[0] if before is not None else None
+    if envelope is not None:
+        for quantity in QUANTITIES:
+            curve = _curve(envelope, stretches, quantity, units)
+            curves[quantity] = _with_before(curve, old, before.line if before else None)
+    factors = None if view.kind == "envelope" else dict(view.factors)
     return Strip(
         line=line,
         title=_title(line, view),
@@ -126,6 +131,7 @@ def strip_of(
         actions=tuple(_shown(a, line, stretches, units, factors) for a in _chosen(line, factors)),
         curves=curves,
         status=result.status,
+        sampled=view.kind == "envelope",
     )
 
 
@@ -188,6 +194,7 @@ def member_words(member: Member, units: DisplayUnits) -> str:
 def values_at(strip: Strip, x: float, units: DisplayUnits) -> list[tuple[str, str]]:
     """Return (quantity, words) of every curve at a place on the axis."""
     rows = []
+    about = "≈ " if strip.sampled else ""
     for quantity, curve in strip.curves.items():
         known = ~np.isnan(curve.upper)
         if not known.any() or not _inside(strip, x):
@@ -196,9 +203,9 @@ def values_at(strip: Strip, x: float, units: DisplayUnits) -> list[tuple[str, st
         high = float(np.interp(x, curve.x[known], curve.upper[known]))
         unit = UNIT_OF[quantity]
         if units.number(low, unit) == units.number(high, unit):
-            words = units.text(high, unit)
+            words = about + units.text(high, unit)
         else:
-            words = f"{units.number(low, unit)} … {units.text(high, unit)}"
+            words = f"{about}{units.number(low, unit)} … {units.text(high, unit)}"
         rows.append((quantity, words))
     return rows
 
@@ -296,36 +303,34 @@ def _polynomial(coefficients: tuple[float, ...], v: float) -> float:
 
 
 def _curve(
-    result: LineResult,
+    envelope: LineEnvelope,
     stretches: tuple[Stretch, ...],
-    view: View,
     quantity: Quantity,
     units: DisplayUnits,
-) -> Curve | None:
-    pair = line_ordinates(result, view, quantity, CURVE_POINTS)
-    if pair is None:
-        return None
-    low, high = pair
+) -> Curve:
     x = np.concatenate([_axis_of(s) for s in stretches])
-    lower = np.concatenate([np.append(low[s.member.id], np.nan) for s in stretches])
-    upper = np.concatenate([np.append(high[s.member.id], np.nan) for s in stretches])
-    peaks = []
-    for stretch in stretches:
-        if view.kind == "envelope":
-            peaks += _envelope_peaks(result, stretch, view.name, quantity, units)
-        else:
-            peaks += _curve_peaks(stretch, high[stretch.member.id], quantity, view, units)
+    lower, upper = _joined(envelope, stretches, quantity)
+    peaks = [peak for s in stretches for peak in _peaks(envelope, s, quantity, units)]
     return Curve(quantity, x, lower, upper, tuple(_worth_labels(peaks)))
+
+
+def _joined(
+    envelope: LineEnvelope, stretches: Sequence[Stretch], quantity: Quantity
+) -> tuple[Floats, Floats]:
+    low, high = line_ordinates(envelope, quantity, CURVE_POINTS)
+    order = [s.member.id for s in stretches]
+    lower = np.concatenate([np.append(low[i], np.nan) for i in order])
+    return lower, np.concatenate([np.append(high[i], np.nan) for i in order])
 
 
 def _axis_of(stretch: Stretch) -> Floats:
     return np.append(np.linspace(stretch.start, stretch.end, CURVE_POINTS), stretch.end)
 
 
-def _envelope_peaks(
-    result: LineResult, stretch: Stretch, limit_state: str, quantity: Quantity, units: DisplayUnits
+def _peaks(
+    envelope: LineEnvelope, stretch: Stretch, quantity: Quantity, units: DisplayUnits
 ) -> list[Peak]:
-    member = result.envelopes[limit_state].members[stretch.member.id]
+    member = envelope.members[stretch.member.id]
     found: tuple[Extreme, Extreme] = {
         "moment": (member.sagging, member.hogging),
         "shear": (member.shear_max, member.shear_min),
@@ -334,24 +339,6 @@ def _envelope_peaks(
     return [
         Peak(stretch.to_axis(e.x), e.value, units.number(e.value, UNIT_OF[quantity]), e.source)
         for e in found
-    ]
-
-
-def _curve_peaks(
-    stretch: Stretch, values: Floats, quantity: Quantity, view: View, units: DisplayUnits
-) -> list[Peak]:
-    # The exact extremes of a case are the solver's; between the drawn points these labels are
-    # within the thickness of the line.
-    along = np.linspace(stretch.start, stretch.end, len(values))
-    picked = {int(np.argmax(values)), int(np.argmin(values))}
-    return [
-        Peak(
-            float(along[i]),
-            float(values[i]),
-            units.number(float(values[i]), UNIT_OF[quantity]),
-            view.name,
-        )
-        for i in sorted(picked)
     ]
 
 
@@ -368,19 +355,16 @@ def _worth_labels(peaks: list[Peak]) -> list[Peak]:
     return sorted(kept, key=lambda p: p.x)
 
 
-def _with_before(curve: Curve, before: LineResult | None, view: View) -> Curve:
-    if before is None:
+def _with_before(curve: Curve, before: LineEnvelope | None, line: Line | None) -> Curve:
+    if before is None or line is None:
         return curve
-    pair = line_ordinates(before, view, curve.quantity, CURVE_POINTS)
-    if pair is None or pair[0].shape[0] * (CURVE_POINTS + 1) != len(curve.x):
+    low, high = _joined(before, stretches_of(line), curve.quantity)
+    if low.shape != curve.x.shape:
         return curve
-    order = [s.member.id for s in stretches_of(before.line)]
-    low, high = (np.concatenate([np.append(values[i], np.nan) for i in order]) for values in pair)
-    if np.allclose(low, curve.lower, equal_nan=True) and np.allclose(
+    same = np.allclose(low, curve.lower, equal_nan=True) and np.allclose(
         high, curve.upper, equal_nan=True
-    ):
-        return curve
-    return Curve(curve.quantity, curve.x, curve.lower, curve.upper, curve.peaks, (low, high))
+    )
+    return curve if same else replace(curve, before=(low, high))
 
 
 __all__ = [

@@ -1,0 +1,367 @@
+"""The panel beside the strip: facts about the chosen spot, and the decisions it allows.
+
+A decision is sent as a title and a change of the job file's text; nothing is computed here.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Any
+
+from analysis_core.model import RIGID, Action
+from analysis_core.results import LineResult, Outcome
+from analysis_core.units import DisplayUnits
+
+from ..present import decisions
+from ..present.diagrams import View
+from ..present.inspector import (
+    RELEASE_CHOICES,
+    SPRING,
+    SUPPORT_CHOICES,
+    joint_facts,
+    line_facts,
+    member_facts,
+    release_choice,
+    stiffness_words,
+    support_choice,
+)
+from ..qt import QtWidgets, Signal
+from ..texts import translate
+from .fields import button, choice, entry, facts_label, facts_text, heading
+
+Change = Callable[[str], str]
+
+
+class Inspector(QtWidgets.QScrollArea):
+    """Rebuilt for every spot: the forms are small, and stale fields cannot stay."""
+
+    decided = Signal(str, object)
+
+    def __init__(self, parent: Any = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("SpanledgerInspector")
+        self.setWidgetResizable(True)
+        self.setMinimumWidth(270)
+        self.setMaximumWidth(380)
+        self.setFrameShape(QtWidgets.QFrame.Shape.NoFrame)
+        self.clear()
+
+    def clear(self) -> None:
+        """Show nothing."""
+        self._begin("")
+
+    def show_line(self, result: LineResult, outcome: Outcome, units: DisplayUnits) -> None:
+        """Show facts about a whole line."""
+        self._begin(translate("Spanledger", "Line {mark}").format(mark=result.line.mark))
+        self._facts(line_facts(result, outcome, units))
+        hint = translate("Spanledger", "Click a bearing, a span or an action to decide on it.")
+        label = QtWidgets.QLabel(hint)
+        label.setWordWrap(True)
+        self._layout.addWidget(label)
+        self._layout.addStretch(1)
+
+    def show_joint(
+        self, result: LineResult, joint: int, view: View, outcome: Outcome, units: DisplayUnits
+    ) -> None:
+        """Show a bearing and the ways to hold it."""
+        at = result.line.joints[joint]
+        title = translate("Spanledger", "Joint {number} of {mark}")
+        self._begin(title.format(number=joint, mark=result.line.mark))
+        self._facts(joint_facts(result, joint, view, dict(outcome.model.names), units))
+        where = decisions.where_is(result.line, joint)
+        if where is not None:
+            self._support_form(result.line.mark, joint, at.support, where, units)
+        if at.element and at.support is not None:
+            self._movement_form(result.line.mark, joint, at.element, outcome, units)
+        self._layout.addStretch(1)
+
+    def show_member(
+        self, result: LineResult, member: int, outcome: Outcome, units: DisplayUnits
+    ) -> None:
+        """Show a span, how its ends are joined, and a form for one more action."""
+        part = result.line.members[member]
+        title = translate("Spanledger", "Span {number} of {mark}")
+        number = part.span if part.span is not None else part.id
+        self._begin(title.format(number=number, mark=result.line.mark))
+        self._facts(member_facts(result, member, dict(outcome.model.names), units))
+        for at_end, spring in ((False, part.start_spring), (True, part.end_spring)):
+            where = decisions.end_of(result.line, member, at_end=at_end)
+            if where is not None:
+                self._release_form(result.line.mark, member, at_end, spring, where, units)
+        if part.element:
+            self._action_form(result.line.mark, part.element, outcome, units)
+            self._section_form(result.line.mark, part, units)
+        self._layout.addStretch(1)
+
+    def show_action(
+        self, result: LineResult, number: int, words: str, text: str, units: DisplayUnits
+    ) -> None:
+        """Show an action; one from the job file can be changed or taken out."""
+        action = result.line.actions[number]
+        self._begin(translate("Spanledger", "Action on {mark}").format(mark=result.line.mark))
+        self._facts([("Case", action.case), ("Action", words), ("From", action.source or "–")])
+        value = decisions.changeable_value(text, action.source)
+        if decisions.action_index(action.source) >= 0:
+            self._change_form(result.line.mark, action, value, units)
+        else:
+            hint = translate(
+                "Spanledger",
+                "This action comes from the model or its self weight; change it there, or add "
+                "another one to the span.",
+            )
+            label = QtWidgets.QLabel(hint)
+            label.setWordWrap(True)
+            self._layout.addWidget(label)
+        self._layout.addStretch(1)
+
+    # Forms.
+    def _support_form(
+        self, mark: str, joint: int, support: Any, where: Any, units: DisplayUnits
+    ) -> None:
+        kind = choice(
+            "SpanledgerSupport", SUPPORT_CHOICES, support_choice(support),
+            translate("Spanledger", "How the joint is held"),
+        )  # fmt: skip
+        vertical = entry(
+            "SpanledgerVertical",
+            stiffness_words(support.vertical if support else RIGID, "translational stiffness",
+                            units),
+            tip=translate("Spanledger", "Stiffness upward: rigid, free, or 25 kN/mm say"),
+        )  # fmt: skip
+        rotation = entry(
+            "SpanledgerRotation",
+            stiffness_words(support.rotation if support else 0.0, "rotational stiffness", units),
+            tip=translate("Spanledger", "Stiffness against turning: rigid, free, or a value"),
+        )
+        apply = button("SpanledgerDecideSupport", translate("Spanledger", "Hold it so"))
+        form = self._form(translate("Spanledger", "Bearing"))
+        form.addRow(translate("Spanledger", "Held"), kind)
+        form.addRow(translate("Spanledger", "Vertical"), vertical)
+        form.addRow(translate("Spanledger", "Rotation"), rotation)
+        form.addRow(apply)
+
+        def only_for_springs() -> None:
+            spring = kind.currentData() == SPRING
+            vertical.setEnabled(spring)
+            rotation.setEnabled(spring)
+
+        def decide() -> None:
+            title = translate("Spanledger", "Joint {joint} of {mark}: {how}").format(
+                joint=joint, mark=mark, how=kind.currentText()
+            )
+
+            def change(text: str) -> str:
+                if kind.currentData() != SPRING:
+                    return decisions.decide_support(text, where, kind.currentData())
+                values = {
+                    "vertical": _stiffness(vertical.text(), "translational stiffness", units),
+                    "rotation": _stiffness(rotation.text(), "rotational stiffness", units),
+                }
+                return decisions.decide_support(text, where, values)
+
+            self.decided.emit(title, change)
+
+        only_for_springs()
+        kind.currentIndexChanged.connect(lambda _index: only_for_springs())
+        apply.clicked.connect(decide)
+
+    def _movement_form(
+        self, mark: str, joint: int, element: str, outcome: Outcome, units: DisplayUnits
+    ) -> None:
+        case = _case_box("SpanledgerMovementCase", outcome)
+        down = entry("SpanledgerDown", hint=f"10 {units.symbol('deflection')}",
+                     tip=translate("Spanledger", "How far the support sinks"))  # fmt: skip
+        apply = button("SpanledgerDecideMovement", translate("Spanledger", "Let it settle"))
+        form = self._form(translate("Spanledger", "Settlement"))
+        form.addRow(translate("Spanledger", "Case"), case)
+        form.addRow(translate("Spanledger", "Down"), down)
+        form.addRow(apply)
+
+        def decide() -> None:
+            title = translate("Spanledger", "Joint {joint} of {mark} settles").format(
+                joint=joint, mark=mark
+            )
+
+            def change(text: str) -> str:
+                words = decisions.quantity_text(down.text(), "settlement", units)
+                return decisions.decide_movement(text, element, case.currentText(), words)
+
+            self.decided.emit(title, change)
+
+        apply.clicked.connect(decide)
+
+    def _release_form(
+        self, mark: str, member: int, at_end: bool, spring: float, where: Any, units: DisplayUnits
+    ) -> None:
+        side = "End" if at_end else "Start"
+        kind = choice(f"Spanledger{side}Joined", RELEASE_CHOICES, release_choice(spring))
+        value = entry(f"Spanledger{side}Spring",
+                      stiffness_words(spring, "rotational stiffness", units))  # fmt: skip
+        apply = button(f"SpanledgerDecide{side}", translate("Spanledger", "Join it so"))
+        words = translate("Spanledger", "End") if at_end else translate("Spanledger", "Start")
+        form = self._form(words)
+        form.addRow(translate("Spanledger", "Joined"), kind)
+        form.addRow(translate("Spanledger", "Spring"), value)
+        form.addRow(apply)
+        value.setEnabled(kind.currentData() == SPRING)
+        kind.currentIndexChanged.connect(
+            lambda _index: value.setEnabled(kind.currentData() == SPRING)
+        )
+
+        def decide() -> None:
+            title = translate("Spanledger", "{side} of span {member} of {mark}: {how}").format(
+                side=words, member=member + 1, mark=mark, how=kind.currentText()
+            )
+
+            def change(text: str) -> str:
+                rotation = {"continuous": "rigid", "hinge": "free"}.get(kind.currentData(), "")
+                if not rotation:
+                    rotation = _stiffness(value.text(), "rotational stiffness", units)
+                return decisions.decide_release(text, where, rotation)
+
+            self.decided.emit(title, change)
+
+        apply.clicked.connect(decide)
+
+    def _action_form(self, mark: str, element: str, outcome: Outcome, units: DisplayUnits) -> None:
+        case = _case_box("SpanledgerActionCase", outcome)
+        case.setEditable(True)
+        shape = choice("SpanledgerActionShape", decisions.SHAPES)
+        value = entry("SpanledgerActionValue", hint=f"12 {units.symbol('line load')}")
+        at = entry("SpanledgerActionAt", hint=translate("Spanledger", "2.5 m or 50 %"))
+        start = entry("SpanledgerActionFrom", hint=translate("Spanledger", "its start"))
+        end = entry("SpanledgerActionTo", hint=translate("Spanledger", "its end"))
+        apply = button("SpanledgerDecideAction", translate("Spanledger", "Add the action"))
+        form = self._form(translate("Spanledger", "One more action"))
+        for words, field in (
+            (translate("Spanledger", "Case"), case), (translate("Spanledger", "Shape"), shape),
+            (translate("Spanledger", "Value"), value), (translate("Spanledger", "At"), at),
+            (translate("Spanledger", "From"), start), (translate("Spanledger", "To"), end),
+        ):  # fmt: skip
+            form.addRow(words, field)
+        form.addRow(apply)
+
+        def suit_shape() -> None:
+            spread = shape.currentData() == "uniform"
+            at.setEnabled(not spread)
+            start.setEnabled(spread)
+            end.setEnabled(spread)
+            symbol = units.symbol(decisions.action_quantity(shape.currentData()))
+            value.setPlaceholderText(f"12 {symbol}")
+
+        def decide() -> None:
+            title = translate("Spanledger", "One more action on {mark}").format(mark=mark)
+            kind = shape.currentData()
+            places = {"start": start.text(), "end": end.text()}
+            if kind != "uniform":
+                places = {"at": at.text()}
+
+            def change(text: str) -> str:
+                words = decisions.quantity_text(
+                    value.text(), decisions.action_quantity(kind), units
+                )
+                where = {k: _position(v, units) for k, v in places.items() if v.strip()}
+                return decisions.decide_action(
+                    text, element, case=case.currentText(), shape=kind, value=words, **where
+                )
+
+            self.decided.emit(title, change)
+
+        suit_shape()
+        shape.currentIndexChanged.connect(lambda _index: suit_shape())
+        apply.clicked.connect(decide)
+
+    def _section_form(self, mark: str, part: Any, units: DisplayUnits) -> None:
+        inertia = entry(
+            "SpanledgerInertia",
+            hint=units.text(part.section.inertia, "inertia") if part.section else "8356 cm4",
+        )
+        apply = button("SpanledgerDecideSection", translate("Spanledger", "Take this section"))
+        form = self._form(translate("Spanledger", "Section"))
+        form.addRow(translate("Spanledger", "Inertia"), inertia)
+        form.addRow(apply)
+
+        def decide() -> None:
+            title = translate("Spanledger", "Section of {mark}").format(mark=mark)
+
+            def change(text: str) -> str:
+                words = decisions.quantity_text(inertia.text(), "inertia", units)
+                return decisions.decide_section(text, part.element, {"inertia": words})
+
+            self.decided.emit(title, change)
+
+        apply.clicked.connect(decide)
+
+    def _change_form(
+        self, mark: str, action: Action, value: tuple[str, str] | None, units: DisplayUnits
+    ) -> None:
+        form = self._form(translate("Spanledger", "In the job file"))
+        if value is not None:
+            shape, words = value
+            field = entry("SpanledgerChangeValue", words)
+            apply = button("SpanledgerChangeAction", translate("Spanledger", "Change it"))
+            form.addRow(translate("Spanledger", "Value"), field)
+            form.addRow(apply)
+
+            def decide() -> None:
+                title = translate("Spanledger", "An action on {mark} changed").format(mark=mark)
+
+                def change(text: str) -> str:
+                    typed = decisions.quantity_text(
+                        field.text(), decisions.action_quantity(shape), units
+                    )
+                    return decisions.change_action(text, action.source, typed)
+
+                self.decided.emit(title, change)
+
+            apply.clicked.connect(decide)
+        drop = button(
+            "SpanledgerDropAction", translate("Spanledger", "Take it out"),
+            translate("Spanledger", "Takes the entry out of the job file, wherever it acts"),
+        )  # fmt: skip
+        form.addRow(drop)
+        drop.clicked.connect(
+            lambda: self.decided.emit(
+                translate("Spanledger", "An action on {mark} taken out").format(mark=mark),
+                lambda text: decisions.drop_action(text, action.source),
+            )
+        )
+
+    # Parts.
+    def _begin(self, title: str) -> None:
+        body = QtWidgets.QWidget()
+        self._layout = QtWidgets.QVBoxLayout(body)
+        self._layout.setContentsMargins(6, 2, 6, 6)
+        if title:
+            self._layout.addWidget(heading(title))
+        self.setWidget(body)
+
+    def _facts(self, facts: list[tuple[str, str]]) -> None:
+        label = facts_label("SpanledgerFacts")
+        label.setText(facts_text(facts))
+        self._layout.addWidget(label)
+
+    def _form(self, title: str) -> Any:
+        box = QtWidgets.QGroupBox(title)
+        form = QtWidgets.QFormLayout(box)
+        form.setContentsMargins(6, 4, 6, 4)
+        self._layout.addWidget(box)
+        return form
+
+
+def _case_box(name: str, outcome: Outcome) -> Any:
+    box = QtWidgets.QComboBox()
+    box.setObjectName(name)
+    for case in outcome.model.cases:
+        box.addItem(case.name)
+    return box
+
+
+def _stiffness(typed: str, quantity: str, units: DisplayUnits) -> str:
+    words = typed.strip().lower()
+    return words if words in ("rigid", "free") else decisions.quantity_text(typed, quantity, units)
+
+
+def _position(typed: str, units: DisplayUnits) -> str:
+    words = typed.strip()
+    return words if words.endswith("%") else decisions.quantity_text(words, "length", units)
