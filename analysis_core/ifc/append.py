@@ -1,0 +1,138 @@
+"""Our part of a model file: a block of lines before the end of the data, between two comments.
+
+    ...                                      the file as it was
+    /* Spanledger results begin <digest> */  what stands around the block, digested
+    #901=IFCPROPERTYSINGLEVALUE(...);
+    ...
+    /* Spanledger results end <digest> */    what stands in the block, digested
+    ENDSEC;
+    END-ISO-10303-21;
+
+Nothing else in the file changes, so cutting the block out gives the original file.  The digests
+prove it: where another program has rewritten the file or touched the block, they no longer fit,
+and our entities are found by their names instead (``remove``).  A file may have two blocks: the
+idealised analysis model under the results.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import re
+from collections.abc import Iterable
+from dataclasses import dataclass
+from itertools import pairwise
+
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_values import references
+
+RESULTS = "results"
+MODEL = "analysis model"
+
+# Readers commonly keep instance numbers in 32 signed bits.
+_LARGEST_NUMBER = 2**31 - 1
+_ROOM = 2**26
+
+
+@dataclass(frozen=True, slots=True)
+class Cut:
+    """A file without a block: ``base`` is what stood around it, ``block`` its lines.
+
+    ``intact`` says that neither was touched since the block was written.
+    """
+
+    base: bytes
+    block: bytes
+    intact: bool
+
+
+class Lines:
+    """Instances under construction, numbered upwards from ``first``.
+
+    ``shared`` gives instances of equal text one number: properties may stand in many sets.
+    """
+
+    def __init__(self, first: int) -> None:
+        self.next = first
+        self._lines: list[str] = []
+        self._shared: dict[str, int] = {}
+
+    def add(self, body: str) -> int:
+        """Add an instance, given without number and semicolon; return its number."""
+        number = self.next
+        self._lines.append(f"#{number}={body};")
+        self.next = number + 1
+        return number
+
+    def shared(self, body: str) -> int:
+        """Return the number of an instance with this text; add it where there is none yet."""
+        number = self._shared.get(body)
+        if number is None:
+            number = self._shared[body] = self.add(body)
+        return number
+
+    def shared_list(self, bodies: Iterable[str]) -> str:
+        """Return references to instances with these texts."""
+        return references(map(self.shared, bodies))
+
+    def __len__(self) -> int:
+        return len(self._lines)
+
+    def text(self, newline: bytes) -> bytes:
+        """Return the lines, each with its line end."""
+        if not self._lines:
+            return b""
+        end = newline.decode()
+        return (end.join(self._lines) + end).encode("ascii")
+
+
+def first_free(index: StepIndex) -> int:
+    """Return the number after which ours may count: the largest of the file, or a wide gap.
+
+    Numbers of some files reach the limit of 32 bits; then the widest gap below is taken.
+    """
+    largest = index.largest_id
+    if largest < _LARGEST_NUMBER - _ROOM:
+        return largest + 1
+    taken = sorted({0, *index.ids.tolist(), _LARGEST_NUMBER})
+    below = [n for n in taken if n <= _LARGEST_NUMBER]
+    gaps = [(high - low, low) for low, high in pairwise(below)]
+    return max(gaps)[1] + 1
+
+
+def with_block(
+    base: bytes, position: int, lines: bytes, kind: str, newline: bytes
+) -> list[bytes | memoryview]:
+    """Return the file, in parts, with a block of ``lines`` at ``position`` of ``base``."""
+    begin = f"/* Spanledger {kind} begin {_digest(base)} */".encode() + newline
+    end = f"/* Spanledger {kind} end {_digest(lines)} */".encode() + newline
+    view = memoryview(base)
+    return [view[:position], begin, lines, end, view[position:]]
+
+
+def cut_block(data: bytes, kind: str) -> Cut | None:
+    """Return the file without its block of this kind, None where no block is marked.
+
+    The marks are looked for from the end of the file, where they stand.
+    """
+    begin = re.compile(
+        rb"/\* Spanledger " + kind.encode() + rb" begin ([0-9a-f]{64}) \*/(\r\n?|\n)"
+    )
+    end = re.compile(rb"/\* Spanledger " + kind.encode() + rb" end ([0-9a-f]{64}) \*/(\r\n?|\n)?")
+    opening = _last_match(data, begin, f"/* Spanledger {kind} begin ".encode())
+    closing = _last_match(data, end, f"/* Spanledger {kind} end ".encode())
+    if opening is None or closing is None or closing.start() < opening.end():
+        return None
+    base = data[: opening.start()] + data[closing.end() :]
+    block = data[opening.end() : closing.start()]
+    intact = opening[1] == _digest(base).encode() and closing[1] == _digest(block).encode()
+    return Cut(base, block, intact)
+
+
+def _last_mark(data: bytes, start: str) -> re.Match[bytes] | None:
+    at = data.rfind(start.encode())
+    pattern = re.escape(start.encode()) + rb"([0-9a-f]{64}) \*/(?:\r\n?|\n)?"
+    return re.compile(pattern).match(data, at) if at >= 0 else None
+
+
+def _digest(data: bytes) -> str:
+    return hashlib.sha256(data).hexdigest()

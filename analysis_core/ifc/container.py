@@ -1,0 +1,99 @@
+"""The STEP text inside a model file, and how to put a changed one back in the same wrapping.
+
+A model may be zipped, or written in UTF-16.  Posting works on the text; what wraps it is kept.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import io
+import zipfile
+from collections.abc import Sequence
+from dataclasses import dataclass
+from pathlib import Path
+
+from analysis_core.errors import IfcReadError
+
+_UTF16 = ((b"\xff\xfe", "utf-16-le"), (b"\xfe\xff", "utf-16-be"))
+
+
+@dataclass(frozen=True, slots=True)
+class Container:
+    """``text`` is the STEP text, ``stored`` the file as it lies on the disk."""
+
+    text: bytes
+    stored: bytes
+    zipped: bool = False
+    encoding: str = ""
+    """"utf-16-le" or "utf-16-be" where the text is kept in that."""
+
+    @property
+    def fingerprint(self) -> str:
+        """SHA-256 of the file as it lies on the disk, in hexadecimal."""
+        return hashlib.sha256(self.stored).hexdigest()
+
+    def packed(self, parts: Sequence[bytes | memoryview]) -> Sequence[bytes | memoryview]:
+        """Return the file with another text, given in parts, in the same wrapping."""
+        if not self.zipped and not self.encoding:
+            return parts
+        text = b"".join(parts)
+        if self.encoding:
+            mark = next(mark for mark, encoding in _UTF16 if encoding == self.encoding)
+            text = mark + text.decode("utf-8").encode(self.encoding)
+        return [_zipped_anew(self.stored, text)] if self.zipped else [text]
+
+
+def read_container(path: Path) -> Container:
+    """Read a model file.  Raises IfcReadError where it cannot be read."""
+    try:
+        stored = path.read_bytes()
+    except (OSError, ValueError) as error:
+        reason = getattr(error, "strerror", None) or str(error)
+        raise IfcReadError(f"'{path}' cannot be read ({reason.lower()}); check the path.") from None
+    zipped = stored[:4] == b"PK\x03\x04"
+    text = _unzipped(stored, path.name) if zipped else stored
+    for mark, encoding in _UTF16:
+        if text.startswith(mark):
+            try:
+                return Container(
+                    text[2:].decode(encoding).encode("utf-8"), stored, zipped, encoding
+                )
+            except UnicodeDecodeError:
+                raise IfcReadError(
+                    f"'{path.name}' begins like {encoding.upper()} text but is not; copy or "
+                    f"export it again."
+                ) from None
+    return Container(text, stored, zipped)
+
+
+def _unzipped(stored: bytes, name: str) -> bytes:
+    try:
+        with zipfile.ZipFile(io.BytesIO(stored)) as archive:
+            return archive.read(_model_in(archive, name))
+    except IfcReadError:
+        raise
+    except Exception as error:  # a damaged archive raises whatever the damage leads to
+        raise IfcReadError(
+            f"'{name}' is a damaged or protected zip archive ({error}); copy or export it again."
+        ) from None
+
+
+def _model_in(archive: zipfile.ZipFile, name: str) -> zipfile.ZipInfo:
+    models = [i for i in archive.infolist() if i.filename.lower().endswith(".ifc")]
+    if len(models) != 1:
+        raise IfcReadError(
+            f"'{name}' is a zip archive with {len(models)} .ifc files; one is needed. Unpack it."
+        )
+    return models[0]
+
+
+def _zipped_anew(stored: bytes, text: bytes) -> bytes:
+    """Return the archive with its model replaced; names, dates and other files stay."""
+    result = io.BytesIO()
+    with zipfile.ZipFile(io.BytesIO(stored)) as old, zipfile.ZipFile(result, "w") as new:
+        new.comment = old.comment
+        model = _model_in(old, "")
+        for info in old.infolist():
+            content = text if info.filename == model.filename else old.read(info)
+            new.writestr(info, content, compress_type=info.compress_type)
+    return result.getvalue()

@@ -1,0 +1,103 @@
+"""Property sets as lines of the file: the set, its properties, its relation to the element."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import ifcopenshell.ifcopenshell_wrapper as parser
+
+from analysis_core.findings import Finding
+from analysis_core.ifc.append import Lines
+from analysis_core.ifc.global_ids import global_ids
+from analysis_core.ifc.property_sets import PropertySet
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_values import string
+
+PARSER_SCHEMAS = {"IFC4X3": "IFC4X3_ADD2"}
+
+
+def write_sets(
+    sets: Sequence[PropertySet], index: StepIndex, lines: Lines, owner: str
+) -> list[Finding]:
+    """Add the sets to ``lines``.  An element that the file does not hold becomes a finding."""
+    elements, findings = find_elements(dict.fromkeys(s.element for s in sets), index)
+    names = [f"{s.element}/{s.name}" for s in sets]
+    set_ids = global_ids(names)
+    relation_ids = global_ids(f"{name}/relation" for name in names)
+    titles = {s.name: string(s.name) for s in sets}
+    for made, set_id, relation_id in zip(sets, set_ids, relation_ids, strict=True):
+        element = elements.get(made.element)
+        if element is None:
+            continue
+        properties = lines.shared_list(made.properties)
+        number = lines.add(f"IFCPROPERTYSET('{set_id}',{owner},{titles[made.name]},$,{properties})")
+        lines.add(f"IFCRELDEFINESBYPROPERTIES('{relation_id}',{owner},$,$,(#{element}),#{number})")
+    return findings
+
+
+def find_elements(
+    global_ids_wanted: dict[str, None], index: StepIndex
+) -> tuple[dict[str, int], list[Finding]]:
+    """Return the instance of each element by GlobalId, and findings on those that are not there.
+
+    Where several entities share a GlobalId, the first object (not a relation or a set) is taken.
+    """
+    found: dict[str, int] = {}
+    findings: list[Finding] = []
+    kinds = _ObjectClasses(index)
+    rooted = index.rooted(global_ids_wanted)
+    for global_id in global_ids_wanted:
+        objects = [i for i in rooted.get(global_id, ()) if kinds.is_object(i)]
+        if objects:
+            found[global_id] = objects[0]
+        else:
+            findings.append(_no_element(global_id))
+        if len(objects) > 1:
+            findings.append(_shared_id(global_id, len(objects)))
+    return found, findings
+
+
+class _ObjectClasses:
+    """Tells whether an instance may have property sets of its own; looks each class up once."""
+
+    def __init__(self, index: StepIndex) -> None:
+        self._index = index
+        self._schema = parser.schema_by_name(PARSER_SCHEMAS.get(index.schema, index.schema))
+        self._known: dict[str, bool] = {}
+
+    def is_object(self, instance: int) -> bool:
+        keyword = self._index.keyword(self._index.row(instance))
+        if keyword not in self._known:
+            self._known[keyword] = self._look_up(keyword)
+        return self._known[keyword]
+
+    def _look_up(self, keyword: str) -> bool:
+        try:
+            entity = self._schema.declaration_by_name(keyword).as_entity()
+        except RuntimeError:
+            return False
+        while entity is not None:
+            if entity.name() == "IfcObject":
+                return True
+            entity = entity.supertype()
+        return False
+
+
+def _no_element(global_id: str) -> Finding:
+    return Finding(
+        "warning",
+        "element-not-in-file",
+        f"The model holds no element with GlobalId {global_id!r}, so its results were not "
+        f"written. Analyse the file that is posted to.",
+        (global_id,),
+    )
+
+
+def _shared_id(global_id: str, count: int) -> Finding:
+    return Finding(
+        "warning",
+        "shared-global-id",
+        f"{count} elements share the GlobalId {global_id}; the results were written to the first "
+        f"of them. Give each element a GlobalId of its own in the authoring tool.",
+        (global_id,),
+    )

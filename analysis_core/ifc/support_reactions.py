@@ -1,0 +1,124 @@
+"""What each supporting element receives from the lines that bear on it."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass, field
+
+from analysis_core.ifc.governing import STRENGTH
+from analysis_core.ifc.measures import Measure
+from analysis_core.ifc.property_sets import REACTIONS, PropertySet, SetMaker
+from analysis_core.ifc.step_values import LABEL_LENGTH
+from analysis_core.model import Joint
+from analysis_core.results import LineResult, Outcome, ReactionEnvelope
+
+Bounds = tuple[float, float]
+
+_COMPONENTS = ("Vertical", "Horizontal", "Moment")
+
+
+@dataclass(slots=True)
+class SupportReactions:
+    """Reactions at one element, all lines that it carries together: N, N, N·m.
+
+    ``bounds`` by component and line mark over the strength combinations; ``cases`` the vertical
+    force by (line mark, case).  A line that bears twice on the element (a wall along it, say)
+    counts with the sum.
+    """
+
+    element: str
+    bounds: dict[str, dict[str, Bounds]] = field(default_factory=dict)
+    cases: dict[tuple[str, str], float] = field(default_factory=dict)
+
+    def total(self, component: str) -> Bounds | None:
+        """Return the sum over the lines: each at its own lowest or highest."""
+        found = self.bounds.get(component)
+        if not found:
+            return None
+        return math.fsum(b[0] for b in found.values()), math.fsum(b[1] for b in found.values())
+
+    @property
+    def finite(self) -> bool:
+        """Whether every value is a number that can be written."""
+        numbers = [*self.cases.values()]
+        numbers += [v for found in self.bounds.values() for b in found.values() for v in b]
+        return all(map(math.isfinite, numbers))
+
+
+def support_reactions(outcome: Outcome) -> dict[str, SupportReactions]:
+    """Return the reactions of every supporting element, in the order of the lines."""
+    found: dict[str, SupportReactions] = {}
+    for result in outcome.lines:
+        if result.status != "balanced":
+            continue
+        envelopes = _envelopes(result)
+        for joint in result.line.joints:
+            if joint.support is not None and joint.element:
+                entry = found.setdefault(joint.element, SupportReactions(joint.element))
+                _add(entry, result, joint, envelopes.get(joint.id))
+    return found
+
+
+def reaction_set(found: SupportReactions, maker: SetMaker) -> PropertySet | None:
+    """Return Spanledger_Reactions, None where nothing is known.
+
+    ``Vertical`` bounds the sum of all lines.  ``Horizontal`` and ``Moment`` are there where the
+    support gives such a reaction at all.
+    """
+    m = maker.measures
+    properties = []
+    for component in _COMPONENTS:
+        bounds = found.total(component)
+        if bounds is not None and (component == "Vertical" or any(bounds)):
+            measure = m.torque if component == "Moment" else m.force
+            properties.append(maker.bounded(component, bounds, measure))
+    properties += _case_properties(found, maker, m.force)
+    return PropertySet(found.element, REACTIONS, tuple(properties)) if properties else None
+
+
+def _case_properties(found: SupportReactions, maker: SetMaker, measure: Measure) -> list[str]:
+    taken: set[str] = set(_COMPONENTS)
+    properties = []
+    for (mark, case), value in found.cases.items():
+        name = _distinct(f"{mark} / {case}", taken)
+        taken.add(name)
+        properties.append(maker.single(name, value, measure))
+    return properties
+
+
+def _distinct(name: str, taken: set[str]) -> str:
+    """Return a name of permitted length that no other property of the set has."""
+    short, number = name[:LABEL_LENGTH], 1
+    while short in taken:
+        number += 1
+        tail = f" ({number})"
+        short = name[: LABEL_LENGTH - len(tail)] + tail
+    return short
+
+
+def _envelopes(result: LineResult) -> dict[int, ReactionEnvelope]:
+    envelope = result.envelopes.get(STRENGTH)
+    return {r.joint: r for r in envelope.reactions} if envelope is not None else {}
+
+
+def _add(
+    entry: SupportReactions,
+    result: LineResult,
+    joint: Joint,
+    envelope: ReactionEnvelope | None,
+) -> None:
+    mark = result.line.mark
+    if envelope is not None:
+        for component, low, high in (
+            ("Vertical", envelope.vertical_min, envelope.vertical_max),
+            ("Horizontal", envelope.horizontal_min, envelope.horizontal_max),
+            ("Moment", envelope.moment_min, envelope.moment_max),
+        ):
+            by_line = entry.bounds.setdefault(component, {})
+            before = by_line.get(mark, (0.0, 0.0))
+            by_line[mark] = (before[0] + float(low.value), before[1] + float(high.value))
+    if result.solution is not None:
+        for number, case in enumerate(result.solution.cases):
+            vertical = float(result.solution.reactions[number, joint.id, 1])
+            key = (mark, case)
+            entry.cases[key] = entry.cases.get(key, 0.0) + vertical
