@@ -2,11 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-
 from analysis_core.building import Building
 from analysis_core.idealise.assemblies import assemble
-from analysis_core.idealise.carrying import Body, Contact, Touch, decide, standing
+from analysis_core.idealise.carrying import Contact, Touch, decide
 from analysis_core.idealise.conditions import put_releases, put_supports, vertical_stiffness
 from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.log import Log, listed, named
@@ -14,31 +12,9 @@ from analysis_core.idealise.marks import put_marks
 from analysis_core.idealise.network import network_of
 from analysis_core.idealise.plane_groups import plane_groups
 from analysis_core.idealise.properties import PropertyTable
+from analysis_core.idealise.scheme import Rest, Scheme, body_of
 from analysis_core.model import FREE, RIGID
 from analysis_core.settings import Settings
-
-
-@dataclass(slots=True)
-class Rest:
-    """Joint ``joint`` (by key) of ``carried`` rests on ``carrier``, at its joint ``at`` (by key)
-    or else at ``station`` of its member ``member``."""
-
-    carried: Draft
-    joint: str
-    carrier: Draft
-    at: str = ""
-    member: str = ""
-    station: float = 0.0
-
-
-@dataclass(slots=True)
-class Scheme:
-    """All drafts of a building, and which rests on which."""
-
-    drafts: list[Draft]
-    rests: list[Rest] = field(default_factory=list)
-    carriers: dict[str, Draft] = field(default_factory=dict)
-    """The draft that takes a vertical action on a node where several meet."""
 
 
 def analytical_scheme(building: Building, settings: Settings, log: Log) -> Scheme:
@@ -64,7 +40,7 @@ def let_carry(scheme: Scheme, building: Building, table: PropertyTable, log: Log
     for draft in scheme.drafts:
         for joint in draft.joints:
             at_node.setdefault(joint.key, []).append(draft)
-    bodies = [_body(draft) for draft in scheme.drafts]
+    bodies = [body_of(draft) for draft in scheme.drafts]
     contacts = []
     for key, meeting in sorted(at_node.items()):
         connection = connections.get(key)
@@ -80,15 +56,6 @@ def let_carry(scheme: Scheme, building: Building, table: PropertyTable, log: Log
         if contact.carrier is not None:
             _rest(scheme, contact, drafts, log)
     _report_outside(scheme, at_node, log)
-    upright = standing(bodies, contacts)
-    for draft in scheme.drafts:
-        if draft.mark not in upright:
-            _report_no_support(draft, log)
-
-
-def _body(draft: Draft) -> Body:
-    grounds = [(joint.x, joint.rotation > FREE) for joint in draft.joints if joint.vertical > FREE]
-    return Body(draft.mark, grounds)
 
 
 def _held(draft: Draft, key: str) -> bool:
@@ -191,23 +158,3 @@ def _report_outside(scheme: Scheme, at_node: dict[str, list[Draft]], log: Log) -
                 draft.elements,
                 draft.mark,
             )
-
-
-def _report_no_support(draft: Draft, log: Log) -> None:
-    held = [joint for joint in draft.joints if joint.vertical > FREE]
-    if not held:
-        what = "nothing holds it up"
-    else:
-        what = "it is held up at one place only, where it can turn"
-    message = (
-        f"{what}. Give the model a boundary condition there, or state a support in the job file "
-        f"(supports: on, end)"
-    )
-    draft.faults.append(message)
-    log.add(
-        "error",
-        "no-support",
-        f"{draft.kind.capitalize()} {draft.mark} is not analysed: {message}.",
-        draft.elements,
-        draft.mark,
-    )

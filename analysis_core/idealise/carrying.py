@@ -142,20 +142,27 @@ def _turn_round(table: dict[str, Body], contacts: list[Contact]) -> None:
 
 
 def _settle_equals(table: dict[str, Body], contacts: list[Contact]) -> None:
-    open_contacts = [c for c in contacts if c.carrier is None and not c.settled]
-    while open_contacts:
+    """Rule 4, from the ground upward: first what stands carries what does not yet stand."""
+    waiting = [c for c in contacts if c.carrier is None and not c.settled]
+    while waiting:
         stands = _standing(table, contacts)
-        ready = [c for c in open_contacts if any(t.body in stands for t in c.touches)]
+        ready = [c for c in waiting if 0 < _count(c, stands) < len(c.touches)]
         if not ready:
-            return
-        # Where it decides whether something stands, settle that first.
-        needy = [c for c in ready if not all(t.body in stands for t in c.touches)]
-        contact = (needy or ready)[0]
-        able = [t for t in contact.touches if t.body in stands]
-        best = max(able, key=lambda t: (t.passes, t.stiffness, t.body))
-        open_contacts.remove(contact)
-        contact.doubtful = len(able) > 1
-        if contact.doubtful and not any(t.passes for t in contact.touches):
-            contact.settled = True  # free tips that touch: neither needs the other
-            continue
-        contact.carrier = best.body
+            break
+        for contact in ready:
+            able = [t for t in contact.touches if t.body in stands]
+            contact.carrier = _firmest(able)
+        waiting = [c for c in waiting if c.carrier is None]
+    for contact in waiting:
+        # Free tips that touch need not hold each other up; what crosses does so in some share.
+        if _count(contact, stands) and any(t.passes for t in contact.touches):
+            contact.carrier = _firmest(list(contact.touches))
+            contact.doubtful = True
+
+
+def _count(contact: Contact, names: set[str]) -> int:
+    return sum(touch.body in names for touch in contact.touches)
+
+
+def _firmest(touches: list[Touch]) -> str:
+    return max(touches, key=lambda t: (t.passes, t.stiffness, t.body)).body

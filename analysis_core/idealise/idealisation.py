@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 from analysis_core.building import Building
+from analysis_core.idealise import analytical, meetings
 from analysis_core.idealise.actions import put_axis_actions, put_node_actions
-from analysis_core.idealise.analytical import Scheme, analytical_scheme, let_carry
+from analysis_core.idealise.analytical import analytical_scheme
 from analysis_core.idealise.build import build
 from analysis_core.idealise.cases import cases_of, combinations_of, with_used
 from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.log import Log
+from analysis_core.idealise.physical import physical_scheme
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.properties import PropertyTable
+from analysis_core.idealise.scheme import Rest, Scheme, fault_fallen
 from analysis_core.idealise.selectors import Chooser
 from analysis_core.idealise.self_weight import put_self_weight, weight_cases
 from analysis_core.idealise.temperature import put_temperature_actions
@@ -29,9 +32,16 @@ def idealise(building: Building, settings: Settings) -> LineModel:
     table = PropertyTable(settings, chooser)
     weight = weight_cases(building, settings, log)
     cases = cases_of(building, settings, weight, log)
-    scheme = analytical_scheme(building, settings, log)
-    chooser.marks = _marks(scheme.drafts)
-    let_carry(scheme, building, table, log)
+    if building.route == "physical":
+        physical = physical_scheme(building, settings, chooser, log)
+        scheme = physical.scheme
+        chooser.marks = _marks(scheme.drafts)
+        meetings.let_carry(physical, table, settings.tolerances, log)
+    else:
+        scheme = analytical_scheme(building, settings, log)
+        chooser.marks = _marks(scheme.drafts)
+        analytical.let_carry(scheme, building, table, log)
+    fault_fallen(scheme.drafts, log)
 
     members = {member.global_id: member for member in building.members}
     placer = Placer(scheme.drafts)
@@ -90,10 +100,21 @@ def _transfers(scheme: Scheme, lines: dict[str, Line]) -> tuple[Transfer, ...]:
         if rest.carried.mark not in lines or rest.carrier.mark not in lines:
             continue
         joint = rest.carried.joint_of[rest.joint]
-        index = rest.carrier.joint_of[rest.at]
-        number, bar = next(
-            (n, b) for n, b in enumerate(rest.carrier.bars) if index in (b.start, b.end)
-        )
-        position = 0.0 if bar.start == index else lines[rest.carrier.mark].members[number].length
+        number, position = _seat_of(rest)
         transfers.append(Transfer(rest.carried.mark, joint, rest.carrier.mark, number, position))
     return tuple(transfers)
+
+
+def _seat_of(rest: Rest) -> tuple[int, float]:
+    """Return the member of the carrying line, and where along it the other one rests."""
+    carrier = rest.carrier
+    if rest.at:
+        index = carrier.joint_of[rest.at]
+        number, bar = next((n, b) for n, b in enumerate(carrier.bars) if index in (b.start, b.end))
+        return number, 0.0 if bar.start == index else carrier.length(bar)
+    for number, bar in enumerate(carrier.bars):
+        low, high = sorted((bar.station_start, bar.station_end))
+        if bar.member.global_id == rest.member and low - 1e-6 <= rest.station <= high + 1e-6:
+            share = (rest.station - bar.station_start) / (bar.station_end - bar.station_start)
+            return number, min(max(share, 0.0), 1.0) * carrier.length(bar)
+    raise ValueError(f"member {rest.member} has no bar at {rest.station} m in {carrier.mark}")

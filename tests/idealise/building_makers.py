@@ -184,6 +184,8 @@ def turned(building: Building, angle: float, offset: Vector = FREE3) -> Building
         carriers=tuple(
             replace(
                 k,
+                bottom=k.bottom + offset[2],
+                top=k.top + offset[2],
                 corners=tuple(p((x, y, 0.0))[:2] for x, y in k.corners),
                 start=None if k.start is None else p(k.start),
                 end=None if k.end is None else p(k.end),

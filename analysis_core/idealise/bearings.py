@@ -1,0 +1,326 @@
+"""What a physical beam may bear on: columns, walls, footings, slabs and other beams near it.
+
+Every candidate is measured; ``chains`` and ``bearing_choice`` decide among them.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import Literal
+
+from analysis_core.building import AxisMember, Carrier
+from analysis_core.idealise.beams import Beam
+from analysis_core.idealise.grid_index import GridIndex
+from analysis_core.idealise.plan import Spot, centre, crossing, extent, gap_to, inside, meeting
+from analysis_core.settings import Tolerances
+
+Kind = Literal["column", "wall", "footing", "beam below", "beam", "slab"]
+# Which of several touching elements carries: the stiffest first (common practice).
+RANK: dict[Kind, int] = {
+    "column": 0, "wall": 1, "footing": 2, "beam below": 3, "beam": 4, "slab": 5,
+}  # fmt: skip
+# A stretch of contact longer than this is a beam lying along what carries it (m).
+_ALONG = 1.0
+# Undersides and upper sides nearer than this touch (m).
+_LIFT = 0.1
+# Beams at a flatter angle than this run side by side rather than meet.
+_SKEW = math.sin(math.radians(15.0))
+
+
+@dataclass(frozen=True, slots=True)
+class Bearing:
+    """A place where a beam may bear.
+
+    ``along`` is where it is taken to act, ``low`` and ``high`` the faces of what carries (all m
+    along the beam's plan axis from its start).  ``end``: at the beam's start (0) or end (1), None
+    in between.  ``gap`` is the clear distance from the beam's end, ``distance`` that to the axis.
+    ``passes`` tells, for beams, whether the other one goes on beyond the place.
+    """
+
+    id: str
+    name: str
+    kind: Kind
+    along: float
+    low: float
+    high: float
+    end: int | None
+    gap: float
+    distance: float
+    other_along: float = 0.0
+    passes: bool = True
+    lengthwise: bool = False
+
+    @property
+    def width(self) -> float:
+        """Width of what carries, along the beam."""
+        return self.high - self.low
+
+
+class Surroundings:
+    """All carriers and beams of a building, found by place."""
+
+    def __init__(
+        self, carriers: tuple[Carrier, ...], beams: list[Beam], tolerances: Tolerances
+    ) -> None:
+        self._tolerances = tolerances
+        self._carriers: GridIndex[Carrier] = GridIndex()
+        self._beams: GridIndex[Beam] = GridIndex()
+        reach = tolerances.bearing
+        for carrier in sorted(carriers, key=lambda c: c.global_id):
+            if len(carrier.corners) < 3:
+                continue
+            xs, ys = zip(*carrier.corners, strict=True)
+            self._carriers.add_box(
+                carrier,
+                (min(xs), min(ys), carrier.bottom, max(xs), max(ys), carrier.top),
+            )
+        for beam in beams:
+            around = reach + beam.half_width + max(beam.above, beam.below)
+            self._beams.add_segment(beam, beam.member.start, beam.member.end, around)
+
+    def bearings_of(self, beam: Beam) -> list[Bearing]:
+        """Return every place where ``beam`` may bear, in order along it."""
+        around = self._tolerances.bearing + beam.half_width + max(beam.below, beam.above)
+        start, end = beam.member.start, beam.member.end
+        found: list[Bearing] = []
+        for carrier in self._carriers.near_segment(start, end, around):
+            found.extend(_on_carrier(beam, carrier, self._tolerances))
+        for other in self._beams.near_segment(start, end, around):
+            if other.id != beam.id:
+                found.extend(_on_beam(beam, other, self._tolerances))
+        return sorted(found, key=lambda b: (b.along, RANK[b.kind], b.id))
+
+    def columns_at(self, spot: Spot, level: float) -> list[Carrier]:
+        """Return the columns whose outline holds a plan point near a level, by GlobalId."""
+        x, y = spot
+        box = (x, y, level - _LIFT, x, y, level + _LIFT)
+        near = self._carriers.near_box(box)
+        return [c for c in near if kind_of(c) == "column" and inside(c.corners, spot)]
+
+
+def kind_of(carrier: Carrier | AxisMember) -> Kind | None:
+    """Return the kind of bearing that a class of element makes, None where it makes none."""
+    name = carrier.ifc_class.casefold()
+    for word, kind in _CLASSES:
+        if word in name:
+            return kind
+    return None
+
+
+_CLASSES: tuple[tuple[str, Kind], ...] = (
+    ("column", "column"),
+    ("pile", "column"),
+    ("wall", "wall"),
+    ("footing", "footing"),
+    ("foundation", "footing"),
+    ("slab", "slab"),
+    ("beam", "column"),  # a steep beam or member that stands under others
+    ("member", "column"),
+)
+
+
+def _on_carrier(beam: Beam, carrier: Carrier, tolerances: Tolerances) -> Iterator[Bearing]:
+    kind = kind_of(carrier)
+    if kind is None:
+        return
+    near, far, right, left = extent(carrier.corners, beam.ray)
+    reach = tolerances.bearing
+    if near > beam.run + reach or far < -reach:
+        return
+    sideways = beam.half_width + tolerances.join
+    touching = right <= sideways and left >= -sideways
+    faces = crossing(carrier.corners, beam.ray) or (near, far)
+    if not touching:
+        yield from _beside_end(beam, carrier, kind, faces, tolerances)
+        return
+    contact = max(faces[0], 0.0), min(faces[1], beam.run)
+    if kind == "slab":
+        yield from _on_slab(beam, carrier, contact, tolerances)
+        return
+    if contact[1] - contact[0] > _ALONG and kind != "column":
+        under = right <= tolerances.join and left >= -tolerances.join
+        if under and _holds(beam, carrier, kind, sum(contact) / 2.0, tolerances):
+            yield from _lengthwise(beam, carrier, kind, contact)
+        return
+    along = _axis_place(beam, carrier, kind, faces, contact)
+    place = min(max(along, 0.0), beam.run)
+    if not _holds(beam, carrier, kind, place, tolerances):
+        return
+    yield _bearing(beam, carrier, kind, along, faces, tolerances)
+
+
+def _beside_end(
+    beam: Beam, carrier: Carrier, kind: Kind, faces: tuple[float, float], tolerances: Tolerances
+) -> Iterator[Bearing]:
+    """A column or wall that the beam's axis misses sideways, but its end comes close to."""
+    if kind not in ("column", "wall") or faces[1] - faces[0] > _ALONG:
+        return
+    for end in (0, 1):
+        spot = beam.end_spot(last=bool(end))
+        gap = gap_to(carrier.corners, spot)
+        place = beam.run * end
+        if gap > tolerances.bearing or not _holds(beam, carrier, kind, place, tolerances):
+            continue
+        middle = sum(faces) / 2.0
+        if abs(middle - place) > tolerances.bearing + (faces[1] - faces[0]) / 2.0:
+            continue
+        off = math.dist(spot, _axis_spot(beam, carrier, place))
+        yield Bearing(carrier.global_id, carrier.name, kind, middle, *faces, end, gap, off)
+
+
+def _bearing(
+    beam: Beam,
+    carrier: Carrier,
+    kind: Kind,
+    along: float,
+    faces: tuple[float, float],
+    tolerances: Tolerances,
+) -> Bearing:
+    end = _end_at(beam, faces, along, tolerances)
+    place = beam.run if end == 1 else 0.0 if end == 0 else along
+    gap = max(faces[0] - place, place - faces[1], 0.0)
+    off = math.dist(beam.ray.at(place), _axis_spot(beam, carrier, place))
+    if kind in ("wall", "footing"):
+        off = abs(along - place)
+    return Bearing(carrier.global_id, carrier.name, kind, along, *faces, end, gap, off)
+
+
+def _end_at(
+    beam: Beam, faces: tuple[float, float], along: float, tolerances: Tolerances
+) -> int | None:
+    """Return which end of the beam stands in (or stops short of) what lies between two faces."""
+    slack, reach = tolerances.join, beam.run
+    starts = faces[0] - slack <= 0.0 <= faces[1] + tolerances.bearing or along <= 0.0
+    ends = faces[0] - tolerances.bearing <= reach <= faces[1] + slack or along >= reach
+    if starts and ends:
+        return 0 if abs(along) <= abs(reach - along) else 1
+    return 0 if starts else 1 if ends else None
+
+
+def _axis_spot(beam: Beam, carrier: Carrier, place: float) -> Spot:
+    """Return the plan point of a column's axis at the beam's level, else of its middle."""
+    if carrier.start is None or carrier.end is None:
+        return centre(carrier.corners)
+    (x1, y1, z1), (x2, y2, z2) = carrier.start, carrier.end
+    if abs(z2 - z1) < 1e-9:
+        return centre(carrier.corners)
+    share = min(1.0, max(0.0, (beam.level(place) - z1) / (z2 - z1)))
+    return x1 + share * (x2 - x1), y1 + share * (y2 - y1)
+
+
+def _axis_place(
+    beam: Beam,
+    carrier: Carrier,
+    kind: Kind,
+    faces: tuple[float, float],
+    contact: tuple[float, float],
+) -> float:
+    """Return where along the beam a bearing is taken to act: on the axis of what carries."""
+    if kind == "column":
+        place = min(max(sum(faces) / 2.0, 0.0), beam.run)
+        return beam.ray.local(_axis_spot(beam, carrier, place))[0]
+    if faces[1] - faces[0] <= _ALONG:
+        return sum(faces) / 2.0
+    if contact[0] > contact[1]:  # it stops short of something long: its face
+        return faces[0] if faces[0] > beam.run else faces[1]
+    return sum(contact) / 2.0
+
+
+def _holds(beam: Beam, carrier: Carrier, kind: Kind, place: float, tolerances: Tolerances) -> bool:
+    """Return whether an element stands under (or beside) the beam rather than on top of it.
+
+    A column or wall holds where it comes from below and reaches the beam's underside within the
+    tolerance; it may pass the beam.  What starts at the beam's axis or higher stands on it.
+    """
+    bottom, level = beam.bottom(place), beam.level(place)
+    reaches = carrier.top >= bottom - tolerances.bearing
+    if kind == "footing":
+        return reaches and carrier.bottom < bottom
+    depth = beam.above + beam.below
+    return reaches and carrier.bottom < min(level, bottom + 0.25 * depth) - tolerances.join
+
+
+def _on_slab(
+    beam: Beam, carrier: Carrier, contact: tuple[float, float], tolerances: Tolerances
+) -> Iterator[Bearing]:
+    """A slab carries what rests on its top: a whole beam, or the foot of a rafter."""
+    if contact[0] > contact[1]:
+        return
+    lift = [beam.bottom(place) - carrier.top for place in contact]
+    rests = [abs(gap) <= _LIFT for gap in lift]
+    if all(rests):
+        yield from _lengthwise(beam, carrier, "slab", contact)
+        return
+    for place, on in zip(contact, rests, strict=True):
+        end = 0 if place <= 0.0 else 1 if place >= beam.run else None
+        if on and end is not None:
+            yield Bearing(
+                carrier.global_id, carrier.name, "slab", place, place, place, end, 0.0, 0.0
+            )
+
+
+def _lengthwise(
+    beam: Beam, carrier: Carrier, kind: Kind, contact: tuple[float, float]
+) -> Iterator[Bearing]:
+    """A beam that lies along what carries it is held at both ends of the contact."""
+    for place in contact:
+        end = 0 if place <= 0.0 else 1 if place >= beam.run else None
+        yield Bearing(
+            carrier.global_id, carrier.name, kind, place, place, place, end, 0.0, 0.0,
+            lengthwise=True,
+        )  # fmt: skip
+
+
+def _on_beam(beam: Beam, other: Beam, tolerances: Tolerances) -> Iterator[Bearing]:
+    crossing_at = meeting(beam.ray, other.ray)
+    if crossing_at is None:
+        return
+    (ax, ay), (bx, by) = beam.ray.direction, other.ray.direction
+    turn = abs(ax * by - ay * bx)
+    if turn < _SKEW:
+        return
+    along, there = crossing_at
+    half, own = other.half_width / turn, beam.half_width / turn
+    faces = along - half, along + half
+    if not (-tolerances.bearing - half <= along <= beam.run + half + tolerances.bearing):
+        return
+    if not (-tolerances.join - own <= there <= other.run + own + tolerances.join):
+        return
+    place = min(max(along, 0.0), beam.run)
+    spot = min(max(there, 0.0), other.run)
+    kind = _beam_kind(beam, other, place, spot)
+    if kind is None:
+        return
+    end = _end_at(beam, faces, along, tolerances)
+    at = beam.run if end == 1 else 0.0 if end == 0 else along
+    other_faces = there - own, there + own
+    yield Bearing(
+        other.id,
+        other.member.name,
+        kind,
+        along,
+        *faces,
+        end,
+        max(faces[0] - at, at - faces[1], 0.0),
+        abs(along - at),
+        other_along=spot,
+        passes=_end_at(other, other_faces, there, tolerances) is None,
+    )
+
+
+def _beam_kind(beam: Beam, other: Beam, place: float, spot: float) -> Kind | None:
+    """Return whether the other beam lies below, or at the same level; None: neither."""
+    own_bottom, own_top = beam.bottom(place), beam.top(place)
+    bottom, top = other.bottom(spot), other.top(spot)
+    shared = min(own_top, top) - max(own_bottom, bottom)
+    smaller = min(own_top - own_bottom, top - bottom)
+    if smaller <= 0.0:  # a section is not known: only the axes can tell
+        lower = beam.level(place) - other.level(spot)
+        if abs(lower) <= _LIFT:
+            return "beam"
+        return "beam below" if 0.0 < lower <= 0.5 else None
+    if abs(top - own_bottom) <= min(_LIFT, 0.5 * smaller):
+        return "beam below"
+    return "beam" if shared > 0.25 * smaller else None

@@ -1,0 +1,196 @@
+"""Physical beams become lines: joined over bearings, carried by what is under them."""
+
+from __future__ import annotations
+
+import itertools
+import math
+
+import pytest
+from building_makers import finding, only, shuffled, slugs, spans, turned
+from physical_makers import beam, block, column, house, wall
+
+from analysis_core.building import Building
+from analysis_core.idealise import idealise
+from analysis_core.model import Support
+from analysis_core.settings import Analysis, Settings
+
+Z = 3.0
+PIN = Support(vertical=math.inf)
+
+
+def row(xs=(0.0, 5.0, 11.2, 15.0), side=0.3) -> Building:
+    """Beams drawn from face to face of columns 300 mm square, their underside on the tops."""
+    half = side / 2.0
+    columns = [column(f"C{i}", x, 0.0, 0.0, Z - 0.2, side) for i, x in enumerate(xs)]
+    beams = [
+        beam(f"B{i}", (a + half, 0.0, Z), (b - half, 0.0, Z))
+        for i, (a, b) in enumerate(itertools.pairwise(xs))
+    ]
+    return house(beams, columns)
+
+
+def test_beams_between_columns_are_one_line_measured_axis_to_axis():
+    found = idealise(row(), Settings())
+    line = only(found)
+
+    assert spans(line) == [5.0, 6.2, 3.8]
+    assert [j.support for j in line.joints] == [PIN] * 4
+    assert [j.element for j in line.joints] == ["C0", "C1", "C2", "C3"]
+    assert line.elements == ("B0", "B1", "B2")
+    assert "'C0' (GlobalId C0), 150 mm from its axis" in line.joints[0].reason
+    assert "pinned by rule" in line.joints[0].reason
+    assert [m.element_offset for m in line.members] == pytest.approx([-0.15] * 3)
+    assert line.joints[1].width == pytest.approx(0.3)
+    assert finding(found, "assumed-continuous").line == line.mark
+
+
+def test_beams_that_are_not_to_be_continuous_are_lines_of_their_own():
+    settings = Settings(analysis=Analysis(continuous_over_columns=False))
+    found = idealise(row(), settings)
+
+    assert [spans(line) for line in found.lines] == [[5.0], [6.2], [3.8]]
+    assert all(j.support == PIN for line in found.lines for j in line.joints)
+
+
+def test_one_beam_over_several_columns_is_split_and_overhangs():
+    columns = [column(f"C{i}", x, 0.0, 0.0, Z - 0.2) for i, x in enumerate((0.0, 4.0, 9.0))]
+    found = idealise(house([beam("B", (-1.2, 0.0, Z), (9.1, 0.0, Z))], columns), Settings())
+    line = only(found)
+
+    assert spans(line) == [1.2, 4.0, 5.0]
+    assert [j.element for j in line.joints] == [None, "C0", "C1", "C2"]
+    assert [m.span for m in line.members] == [1, 2, 3]
+
+
+@pytest.mark.parametrize(("angle", "offset"), [(0.0, (1e6, -2e6, 0.0)), (0.7, (1e6, 3e5, 40.0))])
+def test_turning_and_moving_changes_nothing(angle, offset):
+    plain, moved = (only(idealise(b, Settings())) for b in (row(), turned(row(), angle, offset)))
+
+    assert [j.x for j in moved.joints] == pytest.approx([j.x for j in plain.joints], abs=1e-6)
+    assert [j.element for j in moved.joints] == [j.element for j in plain.joints]
+
+
+def test_order_plays_no_part():
+    for seed in range(4):
+        assert idealise(shuffled(row(), seed), Settings()) == idealise(row(), Settings())
+
+
+def test_a_beam_that_ends_in_a_wall_bears_on_the_middle_of_its_thickness():
+    walls = [
+        wall("W1", (-0.1, -3.0, 0.0), (0.1, 3.0, Z - 0.2)),
+        wall("W2", (5.9, -3.0, 0.0), (6.15, 3.0, Z + 1.0)),
+    ]
+    line = only(idealise(house([beam("B", (0.0, 0.0, Z), (5.95, 0.0, Z))], walls), Settings()))
+
+    assert spans(line) == [6.025]
+    assert [j.element for j in line.joints] == ["W1", "W2"]
+    assert line.joints[1].width == pytest.approx(0.25)
+
+
+def test_a_column_that_stands_on_the_beam_does_not_hold_it():
+    carriers = [
+        column("C0", 0.0, 0.0, 0.0, Z - 0.2),
+        column("C1", 6.0, 0.0, 0.0, Z - 0.2),
+        column("upper", 2.0, 0.0, Z + 0.2, 6.0),
+    ]
+    line = only(idealise(house([beam("B", (0.0, 0.0, Z), (6.0, 0.0, Z))], carriers), Settings()))
+
+    assert spans(line) == [6.0]
+
+
+def test_secondary_beams_rest_on_the_primary_that_they_frame_into():
+    """Two secondaries, face to face of the primary; by rule not continuous through it."""
+    columns = [column("C0", 0.0, 0.0, 0.0, Z - 0.2), column("C1", 7.0, 0.0, 0.0, Z - 0.2)]
+    columns += [column("D0", 2.5, 4.0, 0.0, Z - 0.2), column("D1", 2.5, -5.0, 0.0, Z - 0.2)]
+    beams = [
+        beam("P", (0.0, 0.0, Z), (7.0, 0.0, Z)),
+        beam("S1", (2.5, 0.1, Z), (2.5, 4.0, Z)),
+        beam("S2", (2.5, -0.1, Z), (2.5, -5.0, Z)),
+    ]
+    found = idealise(house(beams, columns), Settings())
+    lines = {line.elements[0]: line for line in found.lines}
+
+    assert spans(lines["P"]) == [7.0]
+    assert spans(lines["S1"]) == [4.0]
+    assert spans(lines["S2"]) == [5.0]
+    assert lines["S1"].joints[0].element == "P"
+    assert "frames into beam 'P'" in lines["S1"].joints[0].reason
+    carried = {t.from_line: (t.to_line, t.member, round(t.position, 6)) for t in found.transfers}
+    assert carried == {
+        lines["S1"].mark: (lines["P"].mark, 0, 2.5),
+        lines["S2"].mark: (lines["P"].mark, 0, 2.5),
+    }
+
+
+def test_a_beam_on_top_of_others_rests_on_them_and_runs_through():
+    columns = [column(f"C{x}{y}", x, y, 0.0, Z - 0.2) for x in (0.0, 6.0) for y in (0.0, 4.0, 9.0)]
+    lower = [beam(f"P{y}", (0.0, y, Z), (6.0, y, Z)) for y in (0.0, 4.0, 9.0)]
+    upper = beam("S", (2.0, -0.8, Z + 0.4), (2.0, 9.0, Z + 0.4))
+    found = idealise(house([*lower, upper], columns), Settings())
+    line = next(line for line in found.lines if line.elements == ("S",))
+
+    assert spans(line) == [0.8, 4.0, 5.0]
+    assert [j.element for j in line.joints] == [None, "P0.0", "P4.0", "P9.0"]
+    assert len(found.transfers) == 3
+
+
+def test_a_rafter_on_a_slab_bears_where_its_foot_touches():
+    slab = block("S", "IfcSlab", (-1.0, -4.0, 2.8), (2.0, 4.0, 3.0))
+    ridge = beam("R", (4.0, -4.0, 6.0 - 0.2), (4.0, 4.0, 6.0 - 0.2))
+    posts = [column("P0", 4.0, -4.0, 0.0, 5.6), column("P1", 4.0, 4.0, 0.0, 5.6)]
+    rise = math.hypot(4.0, 2.7) / 4.0 * 0.2  # half depth measured upright
+    rafter = beam("B", (0.0, 0.0, 3.0 + rise), (4.0, 0.0, 5.7 + rise))
+    found = idealise(house([ridge, rafter], [slab, *posts]), Settings())
+    line = next(line for line in found.lines if line.elements == ("B",))
+
+    assert [j.element for j in line.joints] == ["S", "R"]
+    assert "slab" in line.joints[0].reason
+
+
+def test_a_beam_with_one_end_in_the_air_and_one_bearing_is_not_analysed():
+    found = idealise(
+        house([beam("B", (0.0, 0.0, Z), (6.0, 0.0, Z))], [column("C0", 0.0, 0.0, 0.0, Z - 0.2)]),
+        Settings(),
+    )
+
+    assert finding(found, "no-support").elements == ("B",)
+    assert "its end bears on nothing within 350 mm" in only(found).fault
+
+
+def test_splices_in_a_span_are_joined_and_said():
+    columns = [column("C0", 0.0, 0.0, 0.0, Z - 0.2), column("C1", 7.0, 0.0, 0.0, Z - 0.2)]
+    beams = [beam("A", (0.0, 0.0, Z), (2.6, 0.0, Z)), beam("B", (2.61, 0.0, Z), (7.0, 0.0, Z))]
+    found = idealise(house(beams, columns), Settings())
+    line = only(found)
+
+    assert spans(line) == [2.605, 4.395]
+    assert [m.span for m in line.members] == [1, 1]
+    assert finding(found, "assumed-splice").elements == ("A", "B")
+
+
+def test_steep_members_carry_like_columns():
+    posts = [beam("post", (0.0, 0.0, 0.0), (0.0, 0.0, Z - 0.2))]
+    found = idealise(
+        house(
+            [beam("B", (0.0, 0.0, Z), (6.0, 0.0, Z)), *posts],
+            [column("C1", 6.0, 0.0, 0.0, Z - 0.2)],
+        ),
+        Settings(),
+    )
+
+    assert [j.element for j in only(found).joints] == ["post", "C1"]
+    assert finding(found, "steep-member").elements == ("post",)
+
+
+def test_an_edge_beam_over_cantilever_tips_is_carried_by_them():
+    """Beams on two columns each overhang to y = -2; the edge beam lies across their tips."""
+    xs = (0.0, 4.0, 9.0)
+    columns = [column(f"C{x}{y}", x, y, 0.0, Z - 0.2) for x in xs for y in (0.0, 5.0)]
+    arms = [beam(f"A{x}", (x, 5.0, Z), (x, -2.0 + 0.1, Z)) for x in xs]
+    edge = beam("E", (0.0, -2.0, Z), (9.0, -2.0, Z))
+    found = idealise(house([*arms, edge], columns), Settings())
+    line = next(line for line in found.lines if line.elements == ("E",))
+
+    assert spans(line) == [4.0, 5.0]
+    assert [j.element for j in line.joints] == ["A0.0", "A4.0", "A9.0"]
+    assert "no-support" not in slugs(found)
