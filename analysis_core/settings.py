@@ -182,6 +182,27 @@ class Tolerances:
 
 
 @dataclass(frozen=True, slots=True)
+class BeamRules:
+    """When an element of the classes to be included is no beam (physical route); m.
+
+    ``least_slenderness``: length over the larger side of the section; EN 1992-1-1, 5.3.1(3)
+    calls shorter ones deep beams.  The other figures are common practice: rods, strips and
+    anchors are thinner than ``least_depth``, plates than ``least_thickness``; a solid section
+    deeper than ``panel_depth`` (and four times its width) is a wall panel, one wider than
+    ``slab_width`` (and four times its depth) a slab strip.
+    """
+
+    least_length: float = 0.5
+    least_slenderness: float = 3.0
+    least_depth: float = 0.04
+    least_thickness: float = 0.02
+    panel_depth: float = 1.5
+    slab_width: float = 1.0
+    judge_by_role: bool = True
+    """Leave out mullions, plates and parts of railings, curtain walls and the like."""
+
+
+@dataclass(frozen=True, slots=True)
 class Limits:
     """Deflection limits: span divided by this, or m; 0: not checked."""
 
@@ -260,6 +281,7 @@ class Settings:
     rules: RuleSettings = field(default_factory=RuleSettings)
     analysis: Analysis = field(default_factory=Analysis)
     tolerances: Tolerances = field(default_factory=Tolerances)
+    beams: BeamRules = field(default_factory=BeamRules)
     cases: tuple[CaseSetting, ...] = ()
     combinations: tuple[CombinationSetting, ...] = ()
     actions: tuple[ActionSetting, ...] = ()

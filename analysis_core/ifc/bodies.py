@@ -1,0 +1,567 @@
+"""Bodies of products as prisms, meshes or curved sweeps, in the product's own coordinates.
+
+A *prism* is a profile carried along a straight vector: what an extrusion is, whether mapped,
+clipped, cut by openings, stretched by its mapping or one part of a boolean tree.  Everything
+with faces is a *mesh*.  Anything swept along a curve or an angle is *curved*.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Iterable
+from typing import Any, NamedTuple
+
+import numpy as np
+
+from analysis_core.ifc import frames, outline
+from analysis_core.ifc.curves import (
+    Measures,
+    Path,
+    Segment,
+    UnreadableShapeError,
+    read_path,
+    sampled,
+)
+from analysis_core.ifc.frames import WORLD, Frame, Vector
+from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.placements import Placements
+from analysis_core.ifc.profile_outlines import Drawn
+from analysis_core.ifc.sections import Profile, SectionReader, profile_of
+
+_DEEPEST_NESTING = 40
+
+
+class Cut(NamedTuple):
+    """A half-space taken away: everything on the side of ``normal`` beyond ``point``.
+
+    ``reach`` (n, 2) bounds it in the plane of ``frame`` (its x, y axes), or None: unbounded.
+    """
+
+    point: Vector
+    normal: Vector
+    frame: Frame | None = None
+    reach: Floats | None = None
+
+    def moved(self, frame: Frame) -> Cut:
+        """Return the cut after ``frame`` was applied (its axes nearly at right angles)."""
+        back = frames.inverse(frame)
+        # A normal goes with the transposed inverse.
+        normal = (
+            back[0] * self.normal[0] + back[1] * self.normal[1] + back[2] * self.normal[2],
+            back[3] * self.normal[0] + back[4] * self.normal[1] + back[5] * self.normal[2],
+            back[6] * self.normal[0] + back[7] * self.normal[1] + back[8] * self.normal[2],
+        )
+        return Cut(
+            frames.point(frame, *self.point),
+            normal,
+            frames.compose(frame, self.frame) if self.frame else None,
+            self.reach,
+        )
+
+
+class Prism(NamedTuple):
+    """A profile in the x, y plane of ``frame``, carried along ``vector``.
+
+    ``entity`` is the profile's entity, ``end_profile`` the profile at the far end of a taper.
+    """
+
+    profile: Profile
+    frame: Frame
+    vector: Vector
+    entity: Any = None
+    end_profile: Profile | None = None
+    end_entity: Any = None
+    cuts: tuple[Cut, ...] = ()
+    trimmed: bool = False
+    """Whether something other than a half-space was taken from it."""
+    remark: str = ""
+    """What had to be assumed to see a prism in the body."""
+
+    def moved(self, frame: Frame) -> Prism:
+        """Return the prism after ``frame`` was applied."""
+        return self._replace(
+            frame=frames.compose(frame, self.frame),
+            vector=frames.direction(frame, *self.vector),
+            cuts=tuple(cut.moved(frame) for cut in self.cuts),
+        )
+
+
+class Mesh(NamedTuple):
+    """Faces as lists of loops of indices into ``points`` (n, 3); no faces: a cloud of points."""
+
+    points: Floats
+    faces: tuple[tuple[tuple[int, ...], ...], ...]
+    ifc_class: str
+
+    def moved(self, frame: Frame) -> Mesh:
+        """Return the mesh after ``frame`` was applied."""
+        return self._replace(points=frames.images(frame, self.points))
+
+
+class Curved(NamedTuple):
+    """A sweep along a curve: points (n, 3) of its line, and what it is."""
+
+    points: Floats
+    ifc_class: str
+    profile: Profile | None = None
+
+    def moved(self, frame: Frame) -> Curved:
+        """Return the sweep after ``frame`` was applied."""
+        return self._replace(points=frames.images(frame, self.points))
+
+
+Item = Prism | Mesh | Curved
+
+
+class Shape(NamedTuple):
+    """What a product's representation says: its axis, its body, and what was not understood."""
+
+    axis: Path | None = None
+    items: tuple[Item, ...] = ()
+    troubles: tuple[str, ...] = ()
+    box_only: bool = False
+
+
+NOTHING = Shape()
+_NOT_A_BODY = {"axis", "footprint", "box", "annotation", "cog", "profile", "reference",
+               "clearance", "lighting", "survey", "surface", "plan", "boundingbox"}  # fmt: skip
+
+
+class BodyReader:
+    """Reads representations; mapped ones once."""
+
+    def __init__(self, sections: SectionReader, placements: Placements, measures: Measures) -> None:
+        self._sections = sections
+        self._placements = placements
+        self._measures = measures
+        self._length = measures.length
+        self._maps: dict[int, tuple[Item, ...]] = {}
+        self._axis_maps: dict[int, Path | None] = {}
+        self._troubles: list[str] = []
+        self._readers: dict[str, Callable[[Any, int], Iterable[Item]]] = {
+            "IfcExtrudedAreaSolid": self._extrusion,
+            "IfcExtrudedAreaSolidTapered": self._extrusion,
+            "IfcMappedItem": self._mapped,
+            "IfcBooleanResult": self._boolean,
+            "IfcBooleanClippingResult": self._boolean,
+            "IfcCsgSolid": lambda item, depth: self._item(item[0], depth + 1),
+            "IfcBlock": self._block,
+            "IfcRightCircularCylinder": self._cylinder,
+            "IfcFacetedBrep": self._brep,
+            "IfcFacetedBrepWithVoids": self._brep,
+            "IfcManifoldSolidBrep": self._brep,
+            "IfcAdvancedBrep": self._brep,
+            "IfcAdvancedBrepWithVoids": self._brep,
+            "IfcShellBasedSurfaceModel": self._surfaces,
+            "IfcFaceBasedSurfaceModel": self._surfaces,
+            "IfcOpenShell": self._shell,
+            "IfcClosedShell": self._shell,
+            "IfcConnectedFaceSet": self._shell,
+            "IfcTriangulatedFaceSet": self._tessellation,
+            "IfcTriangulatedIrregularNetwork": self._tessellation,
+            "IfcPolygonalFaceSet": self._tessellation,
+            "IfcRevolvedAreaSolid": self._revolution,
+            "IfcRevolvedAreaSolidTapered": self._revolution,
+            "IfcSweptDiskSolid": self._disk,
+            "IfcSweptDiskSolidPolygonal": self._disk,
+            "IfcFixedReferenceSweptAreaSolid": self._directrix,
+            "IfcDirectrixDerivedReferenceSweptAreaSolid": self._directrix,
+            "IfcSurfaceCurveSweptAreaSolid": self._directrix,
+            "IfcSectionedSpine": self._sectioned,
+            "IfcSectionedSolidHorizontal": self._sectioned,
+            "IfcBoundingBox": self._box,
+        }
+
+    def read(self, definition: Any) -> Shape:
+        """Return the shape of an IfcProductDefinitionShape (None: nothing)."""
+        if definition is None:
+            return NOTHING
+        axis: Path | None = None
+        body: tuple[Item, ...] = ()
+        box: tuple[Item, ...] = ()
+        self._troubles = []
+        for representation in definition[2]:
+            identifier = (representation[1] or "").lower()
+            if identifier == "axis":
+                axis = axis or self._axis(representation)
+            elif identifier == "body":
+                body = body + self._items(representation)
+            elif identifier in ("box", "boundingbox"):
+                box = self._items(representation)
+        if not body:
+            for representation in definition[2]:
+                if (representation[1] or "").lower() not in _NOT_A_BODY | {"body"}:
+                    body = self._items(representation)
+                    if body:
+                        break
+        troubles = tuple(dict.fromkeys(self._troubles))
+        if not body and box:
+            return Shape(axis, box, troubles, box_only=True)
+        return Shape(axis, body, troubles)
+
+    def _items(self, representation: Any) -> tuple[Item, ...]:
+        found: list[Item] = []
+        for item in representation[3] or ():
+            found.extend(self._item(item, 0))
+        return tuple(found)
+
+    def _item(self, item: Any, depth: int) -> Iterable[Item]:
+        reader = self._readers.get(item.is_a())
+        if depth > _DEEPEST_NESTING:
+            self._troubles.append(f"{item.is_a()} #{item.id()} is nested in a circle")
+            return ()
+        if reader is None:
+            if not item.is_a("IfcCurve") and not item.is_a("IfcPoint"):
+                self._troubles.append(f"{item.is_a()} #{item.id()} is not a body it reads")
+            return ()
+        try:
+            return tuple(reader(item, depth))
+        except (UnreadableShapeError, ValueError, TypeError, IndexError, AttributeError) as error:
+            self._troubles.append(f"{item.is_a()} #{item.id()}: {error}")
+            return ()
+
+    def _axis(self, representation: Any) -> Path | None:
+        for item in representation[3] or ():
+            try:
+                if item.is_a("IfcMappedItem"):
+                    path = self._axis(item[0][1])
+                    return _moved_path(path, self._mapping_frame(item)) if path else None
+                if item.is_a("IfcCurve"):
+                    return read_path(item, self._measures)
+            except (UnreadableShapeError, ValueError, TypeError, IndexError) as error:
+                self._troubles.append(f"axis {item.is_a()} #{item.id()}: {error}")
+        return None
+
+    def _mapped(self, item: Any, depth: int) -> Iterable[Item]:
+        source = item[0]
+        key = source.id()
+        if key not in self._maps:
+            self._maps[key] = ()
+            found: list[Item] = []
+            for inner in source[1][3] or ():
+                found.extend(self._item(inner, depth + 1))
+            self._maps[key] = tuple(found)
+        frame = self._mapping_frame(item)
+        if frame == WORLD:
+            return self._maps[key]
+        return tuple(inner.moved(frame) for inner in self._maps[key])
+
+    def _mapping_frame(self, item: Any) -> Frame:
+        target = self._operator(item[1])
+        origin = self._placements.axes(item[0][0])
+        return target if origin == WORLD else frames.compose(target, frames.inverse(origin))
+
+    def _operator(self, operator: Any) -> Frame:
+        """Return the frame of an IfcCartesianTransformationOperator3D (IfcBaseAxis)."""
+        axis1, axis2, origin = operator[0], operator[1], operator[2][0]
+        scale = operator[3] if operator[3] is not None else 1.0
+        axis3 = operator[4]
+        z = frames.unit(self._placements.direction(axis3)) if axis3 else (0.0, 0.0, 1.0)
+        rough = self._placements.direction(axis1) if axis1 else (1.0, 0.0, 0.0)
+        x = frames.unit(frames.plus(rough, z, -frames.dot(rough, z)))
+        y = frames.cross(z, x)
+        if axis2 and frames.dot(self._placements.direction(axis2), y) < 0.0:
+            y = (-y[0], -y[1], -y[2])
+        scale2 = scale3 = scale
+        if len(operator) > 5:
+            scale2 = operator[5] if operator[5] is not None else scale
+            scale3 = operator[6] if operator[6] is not None else scale
+        factor = self._length
+        return (
+            x[0] * scale, x[1] * scale, x[2] * scale,
+            y[0] * scale2, y[1] * scale2, y[2] * scale2,
+            z[0] * scale3, z[1] * scale3, z[2] * scale3,
+            origin[0] * factor, origin[1] * factor,
+            origin[2] * factor if len(origin) > 2 else 0.0,
+        )  # fmt: skip
+
+    def _extrusion(self, item: Any, depth: int) -> Iterable[Item]:
+        swept = item[0]
+        profile = self._profile(swept)
+        frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
+        dx, dy, dz = self._placements.direction(item[2])
+        norm = math.sqrt(dx * dx + dy * dy + dz * dz)
+        extent = item[3] * self._length
+        if not norm > 0.0 or not extent > 0.0:
+            raise UnreadableShapeError(f"an extrusion of depth {item[3]} has no extent")
+        factor = extent / norm
+        vector = frames.direction(frame, dx * factor, dy * factor, dz * factor)
+        if len(item) > 4:
+            end = self._profile(item[4])
+            return (Prism(profile, frame, vector, swept, end, item[4]),)
+        return (Prism(profile, frame, vector, swept),)
+
+    def _profile(self, entity: Any) -> Profile:
+        profile = self._sections.profile(entity)
+        if profile is None:
+            name = entity[1] or entity.is_a()
+            raise UnreadableShapeError(f"its profile '{name}' (#{entity.id()}) cannot be read")
+        return profile
+
+    def _boolean(self, item: Any, depth: int) -> Iterable[Item]:
+        operator, first, second = item[0], item[1], item[2]
+        kept = tuple(self._item(first, depth + 1))
+        if operator == "UNION":
+            return kept + tuple(self._item(second, depth + 1))
+        if operator == "DIFFERENCE" and second.is_a("IfcHalfSpaceSolid"):
+            cut = self._half_space(second)
+            if cut is not None:
+                return tuple(
+                    part._replace(cuts=(*part.cuts, cut)) if isinstance(part, Prism) else part
+                    for part in kept
+                )
+        return tuple(
+            part._replace(trimmed=True) if isinstance(part, Prism) else part for part in kept
+        )
+
+    def _half_space(self, half: Any) -> Cut | None:
+        surface = half[0]
+        if not surface.is_a("IfcPlane"):
+            return None
+        plane = self._placements.axes(surface[0])
+        normal = (plane[6], plane[7], plane[8])
+        if half[1]:
+            # The half-space lies where the normal does not point.
+            normal = (-normal[0], -normal[1], -normal[2])
+        if not half.is_a("IfcPolygonalBoundedHalfSpace"):
+            return Cut(plane[9:], normal)
+        frame = self._placements.axes(half[2])
+        reach = sampled(read_path(half[3], self._measures))[:, :2]
+        return Cut(plane[9:], normal, frame, reach)
+
+    def _block(self, item: Any, depth: int) -> Iterable[Item]:
+        x, y, z = (value * self._length for value in item[1:4])
+        rows = outline.loop([(0.0, 0.0), (x, 0.0), (x, y), (0.0, y)])
+        drawn = Drawn((rows,), "rectangle", {"width": x, "depth": y})
+        frame = self._placements.axes(item[0])
+        profile = profile_of("", "IfcBlock", drawn)
+        return (Prism(profile, frame, frames.direction(frame, 0.0, 0.0, z)),)
+
+    def _cylinder(self, item: Any, depth: int) -> Iterable[Item]:
+        height, radius = item[1] * self._length, item[2] * self._length
+        frame = self._placements.axes(item[0])
+        vector = frames.direction(frame, 0.0, 0.0, height)
+        return (Prism(_disk_profile(radius, 0.0), frame, vector),)
+
+    def _disk(self, item: Any, depth: int) -> Iterable[Item]:
+        points = _in_space(sampled(read_path(item[0], self._measures)))
+        radius = item[1] * self._length
+        inner = (item[2] or 0.0) * self._length
+        profile = _disk_profile(radius, inner)
+        if not _straight(points):
+            return (Curved(points, item.is_a(), profile),)
+        return (_prism_between(points[0], points[-1], profile),)
+
+    def _revolution(self, item: Any, depth: int) -> Iterable[Item]:
+        profile = self._profile(item[0])
+        frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
+        centre = tuple(v * self._length for v in item[2][0][0])
+        axis = frames.unit(self._placements.direction(item[2][1]) if item[2][1] else (0, 0, 1))
+        angle = item[3] * self._measures.angle
+        arm = np.array([profile.moments.x, profile.moments.y, 0.0]) - np.array(centre)
+        u = np.array(axis)
+        across = np.cross(u, arm)
+        along = (arm @ u) * u
+        turns = np.linspace(0.0, angle, 17)[:, None]
+        local = np.array(centre) + along + np.cos(turns) * (arm - along) + np.sin(turns) * across
+        return (Curved(frames.images(frame, local), item.is_a(), profile),)
+
+    def _directrix(self, item: Any, depth: int) -> Iterable[Item]:
+        profile = self._profile(item[0])
+        frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
+        points = frames.images(frame, _in_space(sampled(read_path(item[2], self._measures))))
+        if not _straight(points):
+            return (Curved(points, item.is_a(), profile),)
+        return (_prism_between(points[0], points[-1], profile, item[0]),)
+
+    def _sectioned(self, item: Any, depth: int) -> Iterable[Item]:
+        points = _in_space(sampled(read_path(item[0], self._measures)))
+        sections = [self._profile(entity) for entity in item[1]]
+        if not _straight(points):
+            return (Curved(points, item.is_a(), sections[0]),)
+        prism = _prism_between(points[0], points[-1], sections[0], item[1][0])
+        if sections[-1] is not sections[0]:
+            prism = prism._replace(end_profile=sections[-1], end_entity=item[1][-1])
+        return (prism,)
+
+    def _box(self, item: Any, depth: int) -> Iterable[Item]:
+        corner = [value * self._length for value in item[0][0]]
+        sizes = [value * self._length for value in item[1:4]]
+        corners = np.array(
+            [
+                [
+                    c + s * k
+                    for c, s, k in zip(corner, sizes, (i & 1, i >> 1 & 1, i >> 2), strict=True)
+                ]
+                for i in range(8)
+            ]
+        )
+        faces = ((0, 1, 3, 2), (4, 6, 7, 5), (0, 4, 5, 1), (2, 3, 7, 6), (0, 2, 6, 4), (1, 5, 7, 3))
+        return (Mesh(corners, tuple((face,) for face in faces), item.is_a()),)
+
+    def _brep(self, item: Any, depth: int) -> Iterable[Item]:
+        return self._shell(item[0], depth, item.is_a())
+
+    def _surfaces(self, item: Any, depth: int) -> Iterable[Item]:
+        gathered = _Gatherer(self._length, self._measures)
+        for shell in item[0]:
+            for face in shell[0]:
+                gathered.add(face)
+        return gathered.mesh(item.is_a())
+
+    def _shell(self, item: Any, depth: int, ifc_class: str = "") -> Iterable[Item]:
+        gathered = _Gatherer(self._length, self._measures)
+        for face in item[0]:
+            gathered.add(face)
+        return gathered.mesh(ifc_class or item.is_a())
+
+    def _tessellation(self, item: Any, depth: int) -> Iterable[Item]:
+        points = np.array(item[0][0], dtype=np.float64) * self._length
+        if points.ndim != 2 or points.shape[1] != 3 or len(points) < 4:
+            raise UnreadableShapeError("a tessellation with fewer than four points")
+        faces: list[tuple[tuple[int, ...], ...]] = []
+        if item.is_a("IfcPolygonalFaceSet"):
+            renumbered = item.PnIndex
+            for face in item.Faces:
+                loops = [face[0], *(face[1] if len(face) > 1 else ())]
+                faces.append(tuple(tuple(i - 1 for i in loop) for loop in loops))
+        else:
+            renumbered = item.PnIndex if hasattr(item, "PnIndex") else None
+            faces = [(tuple(i - 1 for i in triangle),) for triangle in item.CoordIndex]
+        if renumbered:
+            faces = [
+                tuple(tuple(renumbered[i] - 1 for i in loop) for loop in face) for face in faces
+            ]
+        return (Mesh(points, tuple(faces), item.is_a()),)
+
+
+class _Gatherer:
+    """Collects faces of a boundary representation, their points once each."""
+
+    def __init__(self, scale: float, measures: Measures) -> None:
+        self._scale = scale
+        self._measures = measures
+        self._index: dict[int, int] = {}
+        self._points: list[tuple[float, ...]] = []
+        self._faces: list[tuple[tuple[int, ...], ...]] = []
+
+    def add(self, face: Any) -> None:
+        loops = []
+        for bound in face[0]:
+            ring = bound[0]
+            if ring.is_a("IfcPolyLoop"):
+                loops.append(tuple(self._vertex(point) for point in ring[0]))
+            elif ring.is_a("IfcEdgeLoop"):
+                loops.append(tuple(self._edges(ring[0])))
+        if loops:
+            self._faces.append(tuple(loops))
+
+    def mesh(self, ifc_class: str) -> Iterable[Item]:
+        if len(self._points) < 4:
+            raise UnreadableShapeError("a body with fewer than four corners")
+        return (Mesh(np.array(self._points), tuple(self._faces), ifc_class),)
+
+    def _vertex(self, point: Any) -> int:
+        key = point.id()
+        index = self._index.get(key)
+        if index is None:
+            x, y, z = point[0]
+            scale = self._scale
+            index = self._index[key] = len(self._points)
+            self._points.append((x * scale, y * scale, z * scale))
+        return index
+
+    def _edges(self, edges: Any) -> Iterable[int]:
+        for oriented in edges:
+            edge = oriented.EdgeElement if oriented.is_a("IfcOrientedEdge") else oriented
+            forward = bool(oriented.Orientation) if oriented.is_a("IfcOrientedEdge") else True
+            start, end = edge[0], edge[1]
+            if not forward:
+                start, end = end, start
+            yield self._vertex(start[0])
+            if edge.is_a("IfcEdgeCurve") and edge.EdgeGeometry.is_a() not in _STRAIGHT_CURVES:
+                yield from self._along(edge, forward)
+
+    def _along(self, edge: Any, forward: bool) -> Iterable[int]:
+        """Points between the ends of a curved edge, in its direction."""
+        key = -edge.id()
+        if key not in self._index:
+            inner = _edge_points(edge, self._measures)
+            self._index[key] = len(self._points)
+            self._index[-edge.id() - (1 << 40)] = len(inner)
+            self._points.extend(tuple(row) for row in inner.tolist())
+        first = self._index[key]
+        count = self._index[-edge.id() - (1 << 40)]
+        order = range(first, first + count)
+        return order if forward else reversed(order)
+
+
+_STRAIGHT_CURVES = {"IfcLine", "IfcPolyline"}
+
+
+def _edge_points(edge: Any, measures: Measures) -> Floats:
+    """Points strictly between the vertices of a curved edge."""
+    ends = [np.array(vertex[0][0], dtype=np.float64) * measures.length for vertex in edge[0:2]]
+    try:
+        points = _in_space(sampled(read_path(edge.EdgeGeometry, measures)))
+    except UnreadableShapeError:
+        return np.zeros((0, 3))
+    near = [int(np.linalg.norm(points - end, axis=1).argmin()) for end in ends]
+    first, last = near
+    if not edge.SameSense:
+        points = points[::-1]
+        first, last = len(points) - 1 - first, len(points) - 1 - last
+    if first <= last:
+        return points[first + 1 : last]
+    closed = np.allclose(points[0], points[-1])
+    return np.vstack([points[first + 1 :], points[:last]]) if closed else np.zeros((0, 3))
+
+
+def _moved_path(path: Path, frame: Frame) -> Path:
+    def image(p: tuple[float, ...]) -> tuple[float, ...]:
+        return frames.point(frame, p[0], p[1], p[2] if len(p) > 2 else 0.0)
+
+    return Path(
+        tuple(Segment(tuple(image(p) for p in segment.points)) for segment in path.segments),
+        path.exact,
+    )
+
+
+def _in_space(points: Floats) -> Floats:
+    if points.shape[1] == 3:
+        return points
+    return np.column_stack([points, np.zeros(len(points))])
+
+
+def _straight(points: Floats) -> bool:
+    chord = points[-1] - points[0]
+    size = float(np.linalg.norm(chord))
+    if size <= 0.0:
+        return False
+    arms = points - points[0]
+    off = arms - np.outer(arms @ chord / size**2, chord)
+    return bool(np.linalg.norm(off, axis=1).max() <= 1e-3 * size)
+
+
+def _disk_profile(radius: float, inner: float) -> Profile:
+    size = 2.0 * radius
+    dimensions = {"diameter": size, "width": size, "depth": size}
+    if inner > 0.0:
+        void = outline.clockwise(outline.circle(inner))
+        dimensions["wall_thickness"] = radius - inner
+        return profile_of(
+            "", "IfcSweptDiskSolid", Drawn((outline.circle(radius), void), "tube", dimensions)
+        )
+    return profile_of(
+        "", "IfcSweptDiskSolid", Drawn((outline.circle(radius),), "circle", dimensions)
+    )
+
+
+def _prism_between(start: Floats, end: Floats, profile: Profile, entity: Any = None) -> Prism:
+    """Prism along a straight directrix; its y axis as upright as the line allows."""
+    vector: Vector = tuple((end - start).tolist())
+    z = frames.unit(vector)
+    up = (0.0, 0.0, 1.0) if abs(z[2]) < 0.999 else (0.0, 1.0, 0.0)
+    x = frames.unit(frames.cross(up, z))
+    origin: Vector = tuple(start.tolist())
+    return Prism(profile, frames.axes_frame(origin, z, x), vector, entity)

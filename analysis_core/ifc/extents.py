@@ -1,0 +1,81 @@
+"""How far a body reaches: its outline in plan and its levels, in the world."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from typing import NamedTuple
+
+import numpy as np
+
+from analysis_core.ifc import frames
+from analysis_core.ifc.bodies import Curved, Item, Mesh, Prism
+from analysis_core.ifc.frames import Frame, Vector
+from analysis_core.ifc.mesh_prisms import hull
+from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.sections import Profile
+from analysis_core.ifc.sticks import after_cut
+
+Corners = tuple[tuple[float, float], ...]
+
+
+class Extent(NamedTuple):
+    """Convex outline in plan (anticlockwise), lowest and highest level, m."""
+
+    corners: Corners
+    bottom: float
+    top: float
+
+
+class ExtentReader:
+    """Works out extents; the hull of a profile only once."""
+
+    def __init__(self) -> None:
+        self._hulls: dict[int, tuple[Profile, tuple[tuple[float, float], ...]]] = {}
+
+    def extent(self, items: Sequence[Item], frame: Frame) -> Extent | None:
+        """Return the extent of a body placed by ``frame``; None where it has no points."""
+        points = [p for item in items for p in self._points(item, frame)]
+        return extent_of(points) if points else None
+
+    def _points(self, item: Item, frame: Frame) -> Iterable[Vector]:
+        if isinstance(item, Mesh | Curved):
+            return [(x, y, z) for x, y, z in frames.images(frame, item.points).tolist()]
+        return self._prism_points(item, frame)
+
+    def _prism_points(self, prism: Prism, frame: Frame) -> Iterable[Vector]:
+        ends: list[Vector] = []
+        vector = prism.vector
+        for profile, whole in ((prism.profile, True), (prism.end_profile, False)):
+            if profile is None:
+                continue
+            for x, y in self._hull(profile):
+                start = frames.point(prism.frame, x, y, 0.0)
+                low, high = 0.0, 1.0
+                for cut in prism.cuts:
+                    low, high = after_cut(cut, start, vector, low, high)
+                ends.append(frames.plus(start, vector, low))
+                if whole or profile is not prism.profile:
+                    ends.append(frames.plus(start, vector, high))
+        return [frames.point(frame, *p) for p in ends]
+
+    def _hull(self, profile: Profile) -> tuple[tuple[float, float], ...]:
+        known = self._hulls.get(id(profile))
+        if known is None:
+            corners = hull(profile.corners).tolist()
+            known = (profile, tuple((x, y) for x, y in corners))
+            self._hulls[id(profile)] = known
+        return known[1]
+
+
+def extent_of(points: Sequence[Vector]) -> Extent:
+    """Return the extent of points in the world."""
+    levels = [p[2] for p in points]
+    # From a local origin: far from the world's, the hull's products would lose digits.
+    x0, y0 = points[0][0], points[0][1]
+    plan = hull(_plan(points, x0, y0)).tolist()
+    corners = tuple((x0 + x, y0 + y) for x, y in plan)
+    return Extent(corners, min(levels), max(levels))
+
+
+def _plan(points: Sequence[Vector], x0: float, y0: float) -> Floats:
+    return np.array([(round(x - x0, 7), round(y - y0, 7)) for x, y, _ in points])

@@ -1,0 +1,103 @@
+"""Findings of the physical reader, gathered by what they say so that one names many elements."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from typing import Any
+
+from analysis_core.findings import Finding, Severity
+
+_NAMED_AT_MOST = 5
+
+
+def named(entity: Any) -> str:
+    """Return how a message calls an element."""
+    name = entity[2] or "without a name"
+    return f"{entity.is_a()} '{name}'"
+
+
+class Notes:
+    """Collects findings; the same finding for many elements becomes one."""
+
+    def __init__(self) -> None:
+        self._shared: dict[Finding, dict[str, None]] = {}
+        self._groups: dict[tuple[Severity, str, str, str], list[tuple[str, str]]] = {}
+
+    def add(self, finding: Finding, element: str = "") -> None:
+        """Note a finding for an element; its own list of elements is kept empty until the end."""
+        elements = self._shared.setdefault(finding, {})
+        if element:
+            elements[element] = None
+
+    def group(self, severity: Severity, slug: str, what: str, advice: str, entity: Any) -> None:
+        """Note the same thing about one more element: ``what`` reads on after "N elements"."""
+        self._groups.setdefault((severity, slug, what, advice), []).append(
+            (entity[0] or f"#{entity.id()}", entity[2] or "")
+        )
+
+    def left_out(self, reason: str, entity: Any) -> None:
+        """Note an element that is no beam."""
+        self.group(
+            "note",
+            "not-a-beam",
+            f"not taken as beams: {reason}",
+            "The rules can be changed in the job file (beams).",
+            entity,
+        )
+
+    def curved(self, entity: Any, reason: str) -> None:
+        """Note a curved member."""
+        self.add(
+            Finding(
+                "warning",
+                "curved-member",
+                f"{named(entity)} is curved ({reason}) and is not analysed; only straight members "
+                f"are. Draw it as straight pieces if that is near enough.",
+                (entity[0],),
+            )
+        )
+
+    def no_shape(self, entity: Any, reason: str) -> None:
+        """Note an element whose place or body cannot be told."""
+        self.group(
+            "warning",
+            "no-representation",
+            f"left out, because no axis and no body could be read: {reason}",
+            "Export them with their geometry.",
+            entity,
+        )
+
+    def no_section(self, entity: Any) -> None:
+        """Note a member without a section."""
+        self.group(
+            "warning",
+            "no-section",
+            "without a section that could be read",
+            "Give area and inertia in the job file (sections).",
+            entity,
+        )
+
+    def findings(self) -> list[Finding]:
+        """Return everything noted."""
+        result = [
+            replace(finding, elements=(*finding.elements, *elements))
+            for finding, elements in self._shared.items()
+        ]
+        for (severity, slug, what, advice), items in self._groups.items():
+            result.append(
+                Finding(
+                    severity,
+                    slug,
+                    f"{_count(items)} {what}. {advice}",
+                    tuple(global_id for global_id, _ in items),
+                )
+            )
+        return result
+
+
+def _count(items: list[tuple[str, str]]) -> str:
+    names = [f"'{name}'" if name else global_id for global_id, name in items]
+    listed = ", ".join(names[:_NAMED_AT_MOST])
+    more = f" and {len(names) - _NAMED_AT_MOST} more" if len(names) > _NAMED_AT_MOST else ""
+    noun = "element" if len(items) == 1 else "elements"
+    return f"{len(items)} {noun} ({listed}{more})"

@@ -1,0 +1,356 @@
+"""A product's shape as a stick: the line through the centroids, the profile and how it lies.
+
+Axis for direction, body for position: where an axis is drawn as well, its direction and its
+extent count, moved onto the centroid line of the body; the distance is kept.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import Any, NamedTuple
+
+import numpy as np
+
+from analysis_core.ifc import frames
+from analysis_core.ifc.bodies import Curved, Cut, Item, Mesh, Prism, Shape
+from analysis_core.ifc.curves import Path, UnreadableShapeError, sampled
+from analysis_core.ifc.frames import Frame, Vector
+from analysis_core.ifc.mesh_prisms import mesh_of_prism, prism_of_mesh
+from analysis_core.ifc.outline import Floats, Matrix
+from analysis_core.ifc.sections import Profile
+
+_PARALLEL = math.cos(math.radians(2.0))
+_AXIS_OVERLAP = 0.8
+_AXIS_REACH = 0.75  # an axis may be this much longer than the body at each end (m), or a tenth
+
+
+class CurvedMemberError(UnreadableShapeError):
+    """The body or the axis is curved."""
+
+
+class Stick(NamedTuple):
+    """Ends of the centroid line, the images of the profile's axes, the profile; local or world.
+
+    ``body_start`` and ``body_end`` are the ends of the body where the axis reaches further.
+    ``offset`` is the distance between the drawn axis and the centroid line, 0 without axis.
+    """
+
+    start: Vector
+    end: Vector
+    x_axis: Vector
+    y_axis: Vector
+    profile: Profile | None
+    entity: Any = None
+    end_profile: Profile | None = None
+    end_entity: Any = None
+    body_start: Vector | None = None
+    body_end: Vector | None = None
+    offset: float = 0.0
+    remarks: tuple[str, ...] = ()
+
+    @property
+    def length(self) -> float:
+        """Distance between the ends."""
+        return math.dist(self.start, self.end)
+
+    def moved(self, frame: Frame) -> Stick:
+        """Return the stick after ``frame`` was applied."""
+        return Stick(
+            frames.point(frame, *self.start),
+            frames.point(frame, *self.end),
+            frames.direction(frame, *self.x_axis),
+            frames.direction(frame, *self.y_axis),
+            self.profile,
+            self.entity,
+            self.end_profile,
+            self.end_entity,
+            frames.point(frame, *self.body_start) if self.body_start else None,
+            frames.point(frame, *self.body_end) if self.body_end else None,
+            self.offset,
+            self.remarks,
+        )
+
+
+def stick_of(shape: Shape) -> Stick:
+    """Return the stick of a shape, in the shape's own coordinates.
+
+    Raises CurvedMemberError for a curved body or axis, UnreadableShapeError where there is
+    nothing that could be a straight member.
+    """
+    axis = _axis_ends(shape.axis)
+    if not shape.items:
+        return _stick_of_axis(axis, shape)
+    main, remarks = _main_prism(shape.items, axis)
+    start, end = _body_ends(main)
+    stick = Stick(
+        start,
+        end,
+        main.frame[0:3],
+        main.frame[3:6],
+        main.profile,
+        main.entity,
+        main.end_profile,
+        main.end_entity,
+        remarks=tuple(remarks),
+    )
+    return _aligned(stick, axis) if axis is not None else stick
+
+
+def section_matrix(stick: Stick, up: Vector) -> Matrix:
+    """Return the matrix from profile axes to (y, z) of the member, z along ``up``.
+
+    x runs along the member, z along ``up`` and y completes the right-handed axes; the profile
+    is projected along the member, so that oblique extrusions give the true cross-section.
+    """
+    along = frames.unit(frames.minus(stick.end, stick.start))
+    y = frames.cross(up, along)
+    return (
+        (frames.dot(y, stick.x_axis), frames.dot(y, stick.y_axis)),
+        (frames.dot(up, stick.x_axis), frames.dot(up, stick.y_axis)),
+    )
+
+
+def upright(start: Vector, end: Vector, depth_axis: Vector) -> Vector:
+    """Return the unit vector across the member in its vertical plane; for a vertical member the
+    direction of the profile's depth."""
+    along = frames.unit(frames.minus(end, start))
+    towards = (0.0, 0.0, 1.0) if abs(along[2]) < 0.9999 else depth_axis
+    up = frames.plus(towards, along, -frames.dot(towards, along))
+    if frames.length(up) < 1e-6 * max(frames.length(towards), 1e-12):
+        return frames.any_perpendicular(along)
+    return frames.unit(up)
+
+
+def _axis_ends(path: Path | None) -> tuple[Vector, Vector] | None:
+    if path is None:
+        return None
+    points = sampled(path)
+    if points.shape[1] == 2:
+        points = np.column_stack([points, np.zeros(len(points))])
+    chord = points[-1] - points[0]
+    size = float(np.linalg.norm(chord))
+    if size <= 1e-6:
+        raise CurvedMemberError("its axis returns to where it starts")
+    arms = points - points[0]
+    off = np.linalg.norm(arms - np.outer(arms @ chord / size**2, chord), axis=1).max()
+    if off > 0.005 * size:
+        raise CurvedMemberError(
+            f"its axis bends {off * 1e3:.0f} mm off the straight line over {size:.2f} m"
+        )
+    first, last = points[0].tolist(), points[-1].tolist()
+    return (first[0], first[1], first[2]), (last[0], last[1], last[2])
+
+
+def _stick_of_axis(axis: tuple[Vector, Vector] | None, shape: Shape) -> Stick:
+    if axis is None:
+        reason = "; ".join(shape.troubles) or "it has no representation"
+        raise UnreadableShapeError(reason)
+    start, end = axis
+    across = frames.any_perpendicular(frames.unit(frames.minus(end, start)))
+    y = frames.cross(frames.unit(frames.minus(end, start)), across)
+    return Stick(start, end, across, y, None, remarks=("it has an axis but no body",))
+
+
+def _main_prism(
+    items: Sequence[Item], axis: tuple[Vector, Vector] | None
+) -> tuple[Prism, list[str]]:
+    prisms: list[Prism] = []
+    curved: list[Curved] = []
+    meshes: list[Mesh] = [item for item in items if isinstance(item, Mesh)]
+    for item in items:
+        if isinstance(item, Curved):
+            curved.append(item)
+        elif isinstance(item, Prism):
+            found = _lengthwise(item, axis)
+            prisms.append(found) if isinstance(found, Prism) else curved.append(found)
+    if meshes and not prisms:
+        found = prism_of_mesh(meshes[0] if len(meshes) == 1 else _together(meshes))
+        prisms.append(found) if isinstance(found, Prism) else curved.append(found)
+    if not prisms:
+        if curved:
+            raise CurvedMemberError(_bend(curved[0]))
+        raise UnreadableShapeError("its body has no solid part")
+    volumes = [prism.profile.moments.area * _height(prism) for prism in prisms]
+    main = prisms[int(np.argmax(volumes))]
+    remarks = [main.remark] if main.remark else []
+    others = [
+        v for prism, v in zip(prisms, volumes, strict=True)
+        if prism is not main and v > 0.05 * max(volumes)
+    ]  # fmt: skip
+    if others:
+        remarks.append(
+            f"its body has {len(prisms)} parts; the section is that of the largest, "
+            f"{100.0 * max(volumes) / sum(volumes):.0f} % of the volume"
+        )
+        main = _with_collinear(main, prisms)
+    return main, remarks
+
+
+def _lengthwise(prism: Prism, axis: tuple[Vector, Vector] | None) -> Prism | Curved:
+    """Return the prism, or what it is when seen along its longest direction.
+
+    Plates are exported as beams whose extrusion runs across the thickness.
+    """
+    low, high = prism.profile.corners.min(axis=0), prism.profile.corners.max(axis=0)
+    x, y = frames.length(prism.frame[0:3]), frames.length(prism.frame[3:6])
+    across = max(float(high[0] - low[0]) * x, float(high[1] - low[1]) * y)
+    if frames.length(prism.vector) >= across:
+        return prism
+    if axis is not None:
+        along = frames.unit(frames.minus(axis[1], axis[0]))
+        if abs(frames.dot(along, frames.unit(prism.vector))) > _PARALLEL:
+            return prism
+    return prism_of_mesh(mesh_of_prism(prism))
+
+
+def _height(prism: Prism) -> float:
+    """Extent of the prism at right angles to its profile, times what the frame stretches."""
+    normal = frames.cross(prism.frame[0:3], prism.frame[3:6])
+    return abs(frames.dot(normal, prism.vector))
+
+
+def _together(meshes: Sequence[Mesh]) -> Mesh:
+    points: list[Floats] = []
+    faces: list[tuple[tuple[int, ...], ...]] = []
+    count = 0
+    for mesh in meshes:
+        points.append(mesh.points)
+        faces += [tuple(tuple(i + count for i in loop) for loop in face) for face in mesh.faces]
+        count += len(mesh.points)
+    return Mesh(np.vstack(points), tuple(faces), meshes[0].ifc_class)
+
+
+def _with_collinear(main: Prism, prisms: Sequence[Prism]) -> Prism:
+    """Lengthen the main part by others that continue it on the same line."""
+    start = _centroid_line(main)[0]
+    along = frames.unit(main.vector)
+    low, high = 0.0, frames.length(main.vector)
+    reach = 0.5 * math.sqrt(main.profile.moments.area)
+    for other in prisms:
+        if other is main or abs(frames.dot(frames.unit(other.vector), along)) < _PARALLEL:
+            continue
+        stations = []
+        for p in _centroid_line(other):
+            arm = frames.minus(p, start)
+            station = frames.dot(arm, along)
+            if frames.length(frames.plus(arm, along, -station)) > reach:
+                break
+            stations.append(station)
+        if len(stations) == 2 and max(stations) > low - 0.05 and min(stations) < high + 0.05:
+            low, high = min(low, *stations), max(high, *stations)
+    shift = frames.plus((0.0, 0.0, 0.0), along, low)
+    frame = main.frame[:9] + frames.plus(main.frame[9:12], shift)
+    return main._replace(
+        frame=frame,
+        vector=(along[0] * (high - low), along[1] * (high - low), along[2] * (high - low)),
+        end_profile=None if (low, high) != (0.0, frames.length(main.vector)) else main.end_profile,
+    )
+
+
+def _bend(item: Curved) -> str:
+    chord = item.points[-1] - item.points[0]
+    size = float(np.linalg.norm(chord))
+    if size <= 1e-9:
+        return f"its body ({item.ifc_class}) is a closed ring"
+    arms = item.points - item.points[0]
+    off = np.linalg.norm(arms - np.outer(arms @ chord / size**2, chord), axis=1).max()
+    return (
+        f"its body ({item.ifc_class}) bends {off * 1e3:.0f} mm off the straight line over "
+        f"{size:.2f} m"
+    )
+
+
+def _centroid_line(prism: Prism) -> tuple[Vector, Vector]:
+    moments = prism.profile.moments
+    start = frames.point(prism.frame, moments.x, moments.y, 0.0)
+    end = frames.plus(start, prism.vector)
+    if prism.end_profile is not None:
+        last = prism.end_profile.moments
+        end = frames.plus(frames.point(prism.frame, last.x, last.y, 0.0), prism.vector)
+    return start, end
+
+
+def _body_ends(prism: Prism) -> tuple[Vector, Vector]:
+    """Ends of the centroid line, shortened by the half-spaces taken from the body."""
+    start, end = _centroid_line(prism)
+    low, high = 0.0, 1.0
+    along = frames.minus(end, start)
+    for cut in prism.cuts:
+        low, high = after_cut(cut, start, along, low, high)
+    if high - low < 0.02:
+        return start, end
+    return frames.plus(start, along, low), frames.plus(start, along, high)
+
+
+def after_cut(
+    cut: Cut, start: Vector, along: Vector, low: float, high: float
+) -> tuple[float, float]:
+    """Return the part (``low`` to ``high`` of 0 to 1) of a line that a half-space leaves."""
+    rate = frames.dot(cut.normal, along)
+    if abs(rate) < 1e-3 * frames.length(cut.normal) * frames.length(along):
+        return low, high
+    at = frames.dot(cut.normal, frames.minus(cut.point, start)) / rate
+    if cut.reach is not None and cut.frame is not None:
+        # Only a bounded half-space that holds the line where it cuts shortens the member.
+        probe = at + (0.01 if rate > 0.0 else -0.01)
+        here = frames.point(
+            frames.inverse(cut.frame), *frames.plus(start, along, min(max(probe, 0.0), 1.0))
+        )
+        if not _inside(cut.reach, here[0], here[1]):
+            return low, high
+    if rate > 0.0:
+        return (low, min(high, at)) if at > low else (low, high)
+    return (max(low, at), high) if at < high else (low, high)
+
+
+def _inside(ring: Floats, x: float, y: float) -> bool:
+    inside = False
+    x0, y0 = ring[-1].tolist()
+    for x1, y1 in ring.tolist():
+        if (y0 > y) != (y1 > y) and x < x0 + (x1 - x0) * (y - y0) / (y1 - y0):
+            inside = not inside
+        x0, y0 = x1, y1
+    return inside
+
+
+def _aligned(stick: Stick, axis: tuple[Vector, Vector]) -> Stick:
+    """Take direction and extent from the axis and the position from the body."""
+    first, last = axis
+    along = frames.unit(frames.minus(last, first))
+    body = frames.minus(stick.end, stick.start)
+    if frames.dot(along, body) < 0.0:
+        stick = _turned_round(stick)
+        body = frames.minus(stick.end, stick.start)
+    arm = frames.minus(frames.plus(stick.start, body, 0.5), first)
+    shift = frames.plus(arm, along, -frames.dot(arm, along))
+    if frames.dot(along, body) < _PARALLEL * frames.length(body):
+        remark = "its axis does not run along its body; the body was taken"
+        return stick._replace(remarks=(*stick.remarks, remark))
+    low, high = (frames.dot(frames.minus(p, first), along) for p in (stick.start, stick.end))
+    size = math.dist(first, last)
+    slack = max(_AXIS_REACH, 0.1 * (high - low))
+    overlap = min(size, high) - max(0.0, low)
+    if overlap < _AXIS_OVERLAP * (high - low) or max(abs(low), abs(high - size)) > slack:
+        remark = "its axis and its body differ in extent; the body was taken"
+        return stick._replace(offset=frames.length(shift), remarks=(*stick.remarks, remark))
+    return stick._replace(
+        start=frames.plus(first, shift),
+        end=frames.plus(last, shift),
+        body_start=stick.start,
+        body_end=stick.end,
+        offset=frames.length(shift),
+    )
+
+
+def _turned_round(stick: Stick) -> Stick:
+    if stick.end_profile is None:
+        return stick._replace(start=stick.end, end=stick.start)
+    return stick._replace(
+        start=stick.end,
+        end=stick.start,
+        profile=stick.end_profile,
+        entity=stick.end_entity,
+        end_profile=stick.profile,
+        end_entity=stick.entity,
+    )
