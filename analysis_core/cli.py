@@ -17,8 +17,16 @@ from typing import Any
 
 from analysis_core import __version__, pipeline
 from analysis_core.errors import AnalysisError, JobError
+from analysis_core.results import Outcome
 from analysis_core.settings import Settings
-from analysis_core.tables import CAUTION, balance_text, record_text, safe, survey_text
+from analysis_core.tables import (
+    CAUTION,
+    balance_text,
+    findings_text,
+    record_text,
+    safe,
+    survey_text,
+)
 from analysis_core.units import display_units
 
 OK, INCOMPLETE, FAILED = 0, 1, 2
@@ -68,6 +76,7 @@ def _parser() -> argparse.ArgumentParser:
     _survey_options(commands)
     _balance_options(commands)
     _post_options(commands)
+    _reconcile_options(commands)
     _rules_options(commands)
     return parser
 
@@ -126,6 +135,21 @@ def _post_options(commands: Any) -> None:
     )
 
 
+def _reconcile_options(commands: Any) -> None:
+    about = "say what changed between two revisions and what it did to the effects"
+    command = _command(commands, "reconcile", _reconcile, about)
+    command.add_argument("before", metavar="BEFORE.ifc", help="the earlier revision")
+    command.add_argument("after", metavar="AFTER.ifc", help="the later revision")
+    command.add_argument("--job", metavar="JOB.yaml", help="settings beside both models")
+    command.add_argument(
+        "--json", metavar="FILE", help="write the changes as JSON ('-': to standard output)"
+    )
+    command.add_argument("--csv", metavar="FILE", help="write the changes as a spreadsheet")
+    command.add_argument(
+        "-o", "--output", metavar="OUT.ifc", help="post the results into a copy of AFTER.ifc"
+    )
+
+
 def _rules_options(commands: Any) -> None:
     about = "list the built-in rule sets, or print one"
     command = _command(commands, "rules", _rules, about)
@@ -156,10 +180,33 @@ def _post(options: argparse.Namespace) -> int:
     settings = _settings(options)
     target = Path(options.model if options.in_place else options.output)
     outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
-    report = pipeline.post(outcome, options.model, target, progress=_progress())
     _put(options, lambda: pipeline.document(outcome, stations=options.stations), "")
-    print(f"{report.summary} {CAUTION}", file=sys.stderr)
+    _post_to(outcome, options.model, target)
     return _status(outcome)
+
+
+def _post_to(outcome: Outcome, source: str, target: Path) -> None:
+    report = pipeline.post(outcome, source, target, progress=_progress())
+    notes = findings_text(report.findings)
+    print(
+        f"Posted into '{safe(str(target))}': {report.written} property sets new, "
+        f"{report.updated} updated, {report.unchanged} unchanged.",
+        *([notes] if notes else []), CAUTION, sep="\n", file=sys.stderr,
+    )  # fmt: skip
+
+
+def _reconcile(options: argparse.Namespace) -> int:
+    from analysis_core import revision_report as report
+
+    settings = _settings(options)
+    found = pipeline.reconcile(options.before, options.after, settings, progress=_progress())
+    units = display_units(settings.display.system, settings.display.units)
+    if options.output:
+        _post_to(found.after, options.after, Path(options.output))
+    if options.csv:
+        _write(Path(options.csv), report.changes_csv(found, units))
+    _put(options, lambda: report.changes_document(found), report.changes_text(found, units))
+    return _status(found.after)
 
 
 def _rules(options: argparse.Namespace) -> int:
@@ -167,7 +214,7 @@ def _rules(options: argparse.Namespace) -> int:
     return OK
 
 
-def _status(outcome: pipeline.Outcome) -> int:
+def _status(outcome: Outcome) -> int:
     failed = any(result.status != "balanced" for result in outcome.lines)
     return INCOMPLETE if failed or any(f.severity == "error" for f in outcome.findings) else OK
 

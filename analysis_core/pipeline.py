@@ -13,13 +13,19 @@ from pathlib import Path
 from typing import Any
 
 from analysis_core import idealise
+from analysis_core.building import Building
+from analysis_core.combining import choose, with_combinations
 from analysis_core.errors import JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
+from analysis_core.ifc import writer
+from analysis_core.ifc.writer import PostReport
 from analysis_core.model import LineModel
 from analysis_core.results import LineResult, Outcome
+from analysis_core.revision import Reconciliation
+from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
-from analysis_core.solving import solve_model
+from analysis_core.solving import Memory, solve_lines
 
 Progress = Callable[[str, float], None]
 
@@ -55,7 +61,7 @@ def survey(
     tell("Reading", 1.0)
     model = idealise.idealise(building, settings)
     findings = tuple(dict.fromkeys((*source.findings, *building.findings, *model.findings)))
-    model = replace(model, findings=findings, title=settings.title or model.title)
+    model = replace(model, findings=findings, names=_names(building))
     _check_marks(model, only)
     return Survey(source.name, source.schema, source.fingerprint, model, findings)
 
@@ -82,10 +88,13 @@ def solve(
     *,
     progress: Progress | None = None,
     only: Sequence[str] = (),
+    memory: Memory | None = None,
 ) -> Outcome:
-    """Solve what a survey found."""
-    tell = progress or _silent
-    model, results, findings, rules = solve_model(found.model, settings, tell)
+    """Solve what a survey found; with a ``memory``, only what it does not know yet."""
+    rules, assumed = choose(found.model, settings)
+    model = with_combinations(found.model, rules)
+    results, failed = solve_lines(model, rules, settings, progress or _silent, memory)
+    findings = (*assumed, *failed)
     if only:
         results = tuple(r for r in results if r.line.mark in only)
     return Outcome(
@@ -95,8 +104,28 @@ def solve(
         model=_restricted(model, results) if only else model,
         lines=results,
         findings=tuple(dict.fromkeys((*found.findings, *findings))),
-        rules=rules,
+        rules=rules.name,
     )
+
+
+def reconcile(
+    before: str | Path,
+    after: str | Path,
+    settings: Settings | None = None,
+    *,
+    progress: Progress | None = None,
+) -> Reconciliation:
+    """Compare two revisions; of the later one only what is affected is solved again.
+
+    Raises IfcReadError, JobError.
+    """
+    settings = settings or Settings()
+    memory = Memory()
+    outcomes = [
+        solve(survey(path, settings, progress=progress), settings, progress=progress, memory=memory)
+        for path in (before, after)
+    ]
+    return compare(outcomes[0], outcomes[1], solved_again=tuple(memory.again))
 
 
 def post(
@@ -106,10 +135,8 @@ def post(
     *,
     progress: Progress | None = None,
     analysis_model: bool = False,
-) -> Any:
+) -> PostReport:
     """Write an outcome into a copy of its model, or the model itself.  Raises IfcWriteError."""
-    from analysis_core.ifc import writer  # posting is not always wanted; keep the start quick
-
     return writer.post(source, target, outcome, analysis_model=analysis_model, progress=progress)
 
 
@@ -138,7 +165,7 @@ def rules_text(name: str | None) -> str:
     return rules.describe(rules.load(name))
 
 
-def _read(source: ifc_source.Source, settings: Settings) -> Any:
+def _read(source: ifc_source.Source, settings: Settings) -> Building:
     route = settings.analysis.route
     if route == "auto":
         route = "analytical" if source.has_analysis_model else "physical"
@@ -149,6 +176,13 @@ def _read(source: ifc_source.Source, settings: Settings) -> Any:
     from analysis_core.ifc.physical import read_physical
 
     return read_physical(source, settings)
+
+
+def _names(building: Building) -> dict[str, str]:
+    names = {m.global_id: m.name for m in building.members}
+    names |= {c.global_id: c.name for c in building.carriers}
+    names |= {c.global_id: c.name for c in building.connections}
+    return {key: name for key, name in names.items() if name}
 
 
 def _check_marks(model: LineModel, only: Sequence[str]) -> None:

@@ -9,7 +9,7 @@ import math
 from collections.abc import Mapping
 from typing import Any
 
-from analysis_core import effects
+from analysis_core.effects.stations import stations as stations_of
 from analysis_core.findings import Finding
 from analysis_core.model import Case, Combination, Joint, Line, Member, Support
 from analysis_core.results import Extreme, LineEnvelope, LineResult, LineSolution, Outcome
@@ -148,7 +148,7 @@ def _member(member: Member) -> dict[str, Any]:
 
 
 def _solution(line: Line, solution: LineSolution, stations: int) -> Mapping[str, Any]:
-    fields = effects.stations(line, solution, stations)
+    fields = stations_of(line, solution, stations)
     return {
         name: {
             "reactions": [
