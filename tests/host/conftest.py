@@ -1,4 +1,4 @@
-"""Starts a real FreeCAD under a virtual display for each scene."""
+"""Starts a real FreeCAD for each scene, under a virtual display where it needs a window."""
 
 from __future__ import annotations
 
@@ -43,7 +43,9 @@ def in_freecad(tmp_path, request):
         if name == "host-missing":
             pytest.fail(f"FreeCAD is required (SPANLEDGER_REQUIRE_HOST=1), but {reason}")
 
-    def play(scene: str, *, timeout: float = 120.0, scale: str = "1", **environment: str) -> dict:
+    def play(
+        scene: str, *, timeout: float = 120.0, scale: str = "1", window: bool = True, **environment
+    ) -> dict:
         home = tmp_path / "home"
         home.mkdir(exist_ok=True)
         shutil.copy(HERE / "user.cfg", home / "user.cfg")
@@ -52,10 +54,10 @@ def in_freecad(tmp_path, request):
         log = tmp_path / "log.txt"
         size = "1600x1000" if scale == "1" else "3200x2000"
         display = f"-screen 0 {size}x24 -dpi 96"  # at other densities Qt scales everything
-        command = [
-            "xvfb-run", "-a", "-s", display, "freecad", str(HERE / "zz_spanledger_scene.py"),
-            "-M", str(ROOT / "addon"),
-        ]  # fmt: skip
+        script = [str(HERE / "zz_spanledger_scene.py"), "-M", str(ROOT / "addon")]
+        command = ["xvfb-run", "-a", "-s", display, "freecad", *script]
+        if not window:
+            command = ["freecadcmd", *script]
         with log.open("w") as written:
             done = subprocess.run(
                 command, stdin=subprocess.DEVNULL, stdout=written, stderr=subprocess.STDOUT,

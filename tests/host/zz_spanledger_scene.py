@@ -11,7 +11,7 @@ import sys
 import traceback
 from pathlib import Path
 
-from PySide import QtCore
+import FreeCAD
 
 sys.path.append(str(Path(__file__).resolve().parent))
 sys.path.append(str(Path(__file__).resolve().parents[1] / "addon"))
@@ -31,4 +31,9 @@ def guarded():
     os._exit(status)
 
 
-QtCore.QTimer.singleShot(0, guarded)
+if FreeCAD.GuiUp:
+    from PySide import QtCore
+
+    QtCore.QTimer.singleShot(0, guarded)  # once the event loop is up
+else:
+    guarded()

@@ -23,6 +23,7 @@ _PROPERTIES = (
     ("App::PropertyFile", "IfcFile", "Model", "The IFC file that the lines were read from"),
     ("App::PropertyFile", "JobFile", "Model", "The job file with the decisions"),
     ("App::PropertyString", "Schema", "Model", "Schema of the IFC file"),
+    ("App::PropertyVector", "Origin", "Model", "World point (mm) that is drawn at the origin"),
     ("App::PropertyString", "Fingerprint", "Model", "Digest of the IFC file when it was read"),
     ("App::PropertyStringList", "Marks", "Lines", "Mark of each line"),
     ("App::PropertyStringList", "Storeys", "Lines", "Storey of each line"),
@@ -82,8 +83,9 @@ def find_beam_lines(document: Any) -> Any | None:
 def show_outcome(obj: Any, outcome: Any, states: list[str]) -> Scene:
     """Write the lines of a run into the object; the diagram is emptied."""
     scene = scene_of(outcome.model.lines)
-    polylines = support_lines(outcome.model, symbol_size(scene))
+    polylines = support_lines(outcome.model, symbol_size(scene), scene.origin)
     obj.Schema = outcome.schema
+    obj.Origin = FreeCAD.Vector(*scene.origin)
     obj.Fingerprint = outcome.fingerprint
     obj.Marks = list(scene.marks)
     obj.Storeys = [line.storey or "" for line in outcome.model.lines]
@@ -117,6 +119,7 @@ def scene_in(obj: Any) -> Scene:
         line_index=np.array(obj.MemberLine, dtype=np.int64),
         elements=tuple(obj.Elements),
         marks=tuple(obj.Marks),
+        origin=tuple(obj.Origin),
     )
 
 

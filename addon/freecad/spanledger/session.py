@@ -8,12 +8,16 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from analysis_core import job
 from analysis_core.errors import JobError
 from analysis_core.results import Outcome
 from analysis_core.settings import Settings
 from analysis_core.units import DisplayUnits, display_units
+
+if TYPE_CHECKING:
+    from analysis_core.ifc.shapes import BuildingShape
 
 
 @dataclass(slots=True)
@@ -37,6 +41,8 @@ class Session:
     """The run before the last decision, to show what moved."""
     posted: set[str] = field(default_factory=set)
     stale: bool = False
+    shape: BuildingShape | None = None
+    """The bodies of the building, once they were made."""
     done: list[Decision] = field(default_factory=list)
     undone: list[Decision] = field(default_factory=list)
 

@@ -35,6 +35,8 @@ class Desk(QtCore.QObject):
         self.scenes: dict[str, Scene] = {}
         self.line: int | None = None
         self.work: Work | None = None
+        self.behind: Work | None = None
+        self.building_shown = True
         window = FreeCADGui.getMainWindow()
         self.spot: tuple[str, int] | None = None
         self.running = RunningBar()
@@ -310,6 +312,8 @@ class Desk(QtCore.QObject):
             session.receive(outcome)
             self.refresh_all(name)
             self._tell_what_moved(session, title)
+            if session.shape is None:
+                self._make_building(name)
 
         self._start(task, done)
 
@@ -322,6 +326,40 @@ class Desk(QtCore.QObject):
             self.tell(str(error))
             return
         self._run(FreeCAD.ActiveDocument.Name, title)
+
+    def _make_building(self, name: str) -> None:
+        """Make the bodies of the building behind everything else; it holds nobody up."""
+        session = self.sessions[name]
+
+        def task(progress: Progress) -> Any:
+            from analysis_core.ifc.shapes import building_shape
+            from analysis_core.ifc.source import open_model
+
+            return building_shape(open_model(session.path), progress=progress)
+
+        def done(shape: Any) -> None:
+            if self.sessions.get(name) is session:
+                session.shape = shape
+                self._show_building(name)
+
+        if self.behind is not None:
+            self.behind.cancel()
+        self.behind = Work(task, self)
+        self.behind.succeeded.connect(done)
+        self.behind.failed.connect(lambda message: FreeCAD.Console.PrintLog(message + "\n"))
+        self.behind.start()
+
+    def _show_building(self, name: str) -> None:
+        obj = document.find_beam_lines(FreeCAD.getDocument(name))
+        if obj is not None:
+            shape = self.sessions[name].shape if self.building_shown else None
+            obj.ViewObject.Proxy.show_building(shape)
+
+    def toggle_building(self) -> None:
+        """Show the building faintly, or hide it."""
+        self.building_shown = not self.building_shown
+        if self.session is not None:
+            self._show_building(FreeCAD.ActiveDocument.Name)
 
     def _tell_what_moved(self, session: Session, title: str) -> None:
         if session.previous is None or self.line is None:

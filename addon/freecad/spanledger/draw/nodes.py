@@ -12,6 +12,7 @@ from ..present.scene import Filled
 Colour = tuple[float, float, float]
 MOST_LABELS = 60
 TRANSPARENCY = 0.45
+BODY_TRANSPARENCY = 0.88
 DEPTH_STEP = 2e-4
 
 
@@ -80,6 +81,38 @@ class Faces:
         """Draw nothing."""
         none = np.zeros((0, 3, 3))
         self.set_filled(Filled(none, np.zeros(0, dtype=np.int64), np.zeros((0, 2, 3))))
+
+
+class Body:
+    """Faint bodies: see-through faces and thin edges that share their points."""
+
+    def __init__(self, colour: Colour) -> None:
+        self.node = coin.SoSeparator()
+        hints = coin.SoShapeHints()
+        hints.vertexOrdering = coin.SoShapeHints.UNKNOWN_ORDERING
+        material = coin.SoMaterial()
+        material.diffuseColor = colour
+        material.transparency = BODY_TRANSPARENCY
+        pick = coin.SoPickStyle()
+        pick.style = coin.SoPickStyle.UNPICKABLE
+        self._points, self._faces = coin.SoCoordinate3(), coin.SoIndexedFaceSet()
+        self._edges = coin.SoIndexedLineSet()
+        for node in (pick, hints, self._points, material, self._faces):
+            self.node.addChild(node)
+        thin = coin.SoMaterial()
+        thin.diffuseColor = colour
+        thin.transparency = 0.5
+        style = coin.SoDrawStyle()
+        style.lineWidth = 1.0
+        for node in (thin, style, self._edges):
+            self.node.addChild(node)
+
+    def set(self, points: np.ndarray, triangles: np.ndarray, edges: np.ndarray) -> None:
+        """Show triangles (t, 3) and edges (e, 2) between points (n, 3)."""
+        _set_points(self._points, points)
+        for field, rows in ((self._faces.coordIndex, triangles), (self._edges.coordIndex, edges)):
+            ends = np.full((len(rows), 1), -1, dtype=np.int32)
+            _set_index(field, np.hstack([rows, ends]).ravel())
 
 
 class Labels:

@@ -14,7 +14,7 @@ from pivy import coin
 from ..document import scene_in
 from ..present.look import VIEW
 from ..present.scene import Scene, filled
-from .nodes import Faces, Labels, Lines
+from .nodes import Body, Faces, Labels, Lines
 
 LINES, DIAGRAMS = "Lines", "Lines and diagrams"
 _ICON = "spanledger.svg"
@@ -37,6 +37,7 @@ class BeamLinesView:
         self.hogging = Faces(palette.parts("hogging"))
         self.chosen = Lines(palette.parts("chosen"), 4.5, nearer=3, pickable=False)
         self.labels = Labels(palette.parts("ink"))
+        self.building = Body(palette.parts("faint"))
         plain, full = coin.SoSeparator(), coin.SoSeparator()
         for root in (plain, full):
             model = coin.SoLightModel()
@@ -46,6 +47,8 @@ class BeamLinesView:
                 root.addChild(part.node)
         for faces in (self.sagging, self.hogging):
             full.addChild(faces.node)
+        for root in (plain, full):
+            root.addChild(self.building.node)
         view_object.addDisplayMode(plain, LINES)
         view_object.addDisplayMode(full, DIAGRAMS)
         self.fill(view_object.Object)
@@ -70,6 +73,15 @@ class BeamLinesView:
         lower = np.array(obj.Lower).reshape(count, obj.Stations)
         self.sagging.set_filled(filled(self.scene, upper, obj.Height, positive=True))
         self.hogging.set_filled(filled(self.scene, lower, obj.Height, positive=False))
+
+    def show_building(self, shape: Any) -> None:
+        """Show the bodies of the building faintly; None shows none."""
+        if shape is None:
+            none = np.zeros((0, 3))
+            self.building.set(none, none.astype(np.int32), np.zeros((0, 2), dtype=np.int32))
+        else:
+            points = 1000.0 * shape.points - np.array(self.scene.origin)
+            self.building.set(points, shape.triangles, shape.edges)
 
     def choose(self, line: int | None, labels: list[tuple[Any, str]] | None = None) -> None:
         """Mark one line, with texts at points; None marks nothing."""

@@ -20,14 +20,19 @@ Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 MM = 1000.0
 SYMBOL_PART_OF_SPAN = 0.05
+# Single precision resolves 1 mm at 10 km; further out the drawing is moved by whole 100 m.
+FAR, ROUND = 1e7, 1e5
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Scene:
     """Geometry of M members.
 
-    ends (M, 2, 3)  world points, mm;  down (M, 3)  unit vector of positive deflection
-    line_index (M,)  which line;  elements  GlobalId per member;  marks  mark per line
+    ends (M, 2, 3)  world points less ``origin``, mm;  down (M, 3)  unit vector of positive
+    deflection;  line_index (M,)  which line;  elements  GlobalId per member;  marks  mark per line
+
+    ``origin`` is (0, 0, 0) unless the model lies so far out that the single precision of the 3D
+    view would show it shaking.
     """
 
     ends: Floats
@@ -35,6 +40,7 @@ class Scene:
     line_index: Integers
     elements: tuple[str, ...]
     marks: tuple[str, ...]
+    origin: tuple[float, float, float] = (0.0, 0.0, 0.0)
 
 
 def scene_of(lines: Sequence[Line]) -> Scene:
@@ -48,13 +54,24 @@ def scene_of(lines: Sequence[Line]) -> Scene:
             down.append((sine * ax, sine * ay, -cosine))
             index.append(number)
             elements.append(member.element)
+    world = MM * np.array(ends, dtype=np.float64).reshape(-1, 2, 3)
+    origin = _origin(world)
     return Scene(
-        ends=MM * np.array(ends, dtype=np.float64).reshape(-1, 2, 3),
+        ends=world - np.array(origin),
         down=np.array(down, dtype=np.float64).reshape(-1, 3),
         line_index=np.array(index, dtype=np.int64),
         elements=tuple(elements),
         marks=tuple(line.mark for line in lines),
+        origin=origin,
     )
+
+
+def _origin(world: Floats) -> tuple[float, float, float]:
+    """Return a round place among points (mm) that lie far out, else nothing to subtract."""
+    if not world.size or np.abs(world).max() < FAR:
+        return 0.0, 0.0, 0.0
+    x, y, z = (np.round(world.reshape(-1, 3).mean(axis=0) / ROUND) * ROUND).tolist()
+    return x, y, z
 
 
 def symbol_size(scene: Scene) -> float:
@@ -65,13 +82,17 @@ def symbol_size(scene: Scene) -> float:
     return float(SYMBOL_PART_OF_SPAN * np.median(lengths))
 
 
-def support_lines(model: LineModel, size: float) -> list[Floats]:
+def support_lines(
+    model: LineModel, size: float, origin: tuple[float, float, float] = (0.0, 0.0, 0.0)
+) -> list[Floats]:
     """Return the symbols of all supports as polylines (n, 3) in mm, in the plane of each line."""
     drawn = []
     for line in model.lines:
         right = np.array(line.axis)
         for joint in line.joints:
-            drawn += _placed(joint.support, MM * np.array(joint.point), right, size)
+            drawn += _placed(
+                joint.support, MM * np.array(joint.point) - np.array(origin), right, size
+            )
     return drawn
 
 
