@@ -246,7 +246,7 @@ def _reactions_table(outcome: Outcome, units: DisplayUnits) -> str:
                 units.number(reaction.vertical_min.value, "force"),
                 units.number(reaction.moment_max.value, "moment"),
                 units.number(reaction.moment_min.value, "moment"),
-                safe(joint.element or "-"),
+                safe(outcome.model.names.get(joint.element or "") or joint.element or "-"),
             ))  # fmt: skip
     if not rows:
         return ""

@@ -160,13 +160,15 @@ class Writer:
             if self._length_name != "inch":
                 small_length = self._length_unit("inch", 0.0254)
         mass, metre = si("MASSUNIT", "GRAM", "KILO"), si("LENGTHUNIT", "METRE")
+        kelvin = si("THERMODYNAMICTEMPERATUREUNIT", "KELVIN")
         derived = [
             self._derived("LINEARFORCEUNIT", (force, 1), (length, -1)),
             self._derived("TORQUEUNIT", (force, 1), (length, 1)),
             self._derived("MODULUSOFELASTICITYUNIT", (small_force, 1), (small_length, -2)),
             self._derived("MASSDENSITYUNIT", (mass, 1), (metre, -3)),
+            self._derived("THERMALEXPANSIONCOEFFICIENTUNIT", (kelvin, -1)),
         ]
-        units = [length, area, volume, angle, force, pressure, mass, *derived]
+        units = [length, area, volume, angle, force, pressure, mass, kelvin, *derived]
         return self.file.create_entity("IfcUnitAssignment", units)
 
     def _si(self, kind: str, name: str, prefix: str | None = None) -> Any:
