@@ -37,6 +37,7 @@ class Desk(QtCore.QObject):
         self.work: Work | None = None
         self.behind: Work | None = None
         self.building_shown = True
+        self._arranged = False
         window = FreeCADGui.getMainWindow()
         self.spot: tuple[str, int] | None = None
         self.running = RunningBar()
@@ -74,9 +75,15 @@ class Desk(QtCore.QObject):
 
     def appear(self) -> None:
         """Show the docks, when the workbench is chosen."""
+        window = FreeCADGui.getMainWindow()
         for dock in (self.list_dock, self.strip_dock):
             dock.show()
             dock.raise_()
+        if not self._arranged:
+            self._arranged = True
+            width, height = window.width(), window.height()
+            window.resizeDocks([self.list_dock], [width * 3 // 10], Qt.Orientation.Horizontal)
+            window.resizeDocks([self.strip_dock], [height * 2 // 5], Qt.Orientation.Vertical)
         self.link.start()
 
     def disappear(self) -> None:
