@@ -23,7 +23,6 @@ from analysis_core.tables import (
     CAUTION,
     balance_text,
     findings_text,
-    record_text,
     safe,
     survey_text,
 )
@@ -171,6 +170,8 @@ def _balance(options: argparse.Namespace) -> int:
     units = display_units(settings.display.system, settings.display.units)
     text = balance_text(outcome, units)
     if options.record:
+        from analysis_core.record_tables import record_text
+
         text = record_text(pipeline.records(outcome), units) + "\n\n" + text
     _put(options, lambda: pipeline.document(outcome, stations=options.stations), text)
     return _status(outcome)

@@ -1,0 +1,143 @@
+"""The command line as a newcomer and a script meet it."""
+
+import json
+import os
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+
+from analysis_core.cli import main
+
+ROOT = Path(__file__).resolve().parents[1]
+SAMPLES = ROOT / "sample_models"
+MODEL = SAMPLES / "quarry_lane_physical_ifc4.ifc"
+JOB = SAMPLES / "quarry_lane.yaml"
+
+
+@pytest.fixture
+def run(capsys):
+    def call(*arguments):
+        status = main([str(a) for a in arguments])
+        out, err = capsys.readouterr()
+        return status, out, err
+
+    return call
+
+
+def test_survey_lists_lines_bearings_with_reasons_and_findings(run):
+    status, out, err = run("survey", MODEL, "--job", JOB)
+
+    assert (status, err) == (0, "")
+    assert "bears on column 'C-A1'" in out
+    assert "R 300x500, Concrete C30/37" in out
+    assert "assumed-continuous" in out
+    assert "licensed engineer" in out
+
+
+def test_balance_prints_effects_reactions_and_verification(run):
+    status, out, _ = run("balance", MODEL, "--job", JOB)
+
+    assert status == 0
+    for words in ("sagging", "hogging", "deflection", "Reactions", "Verification of 11 lines"):
+        assert words in out
+
+
+def test_json_goes_to_standard_output_alone(run):
+    status, out, _ = run("balance", MODEL, "--job", JOB, "--json", "-", "--stations", 5)
+
+    data = json.loads(out)
+    assert status == 0
+    assert (data["format"], data["version"]) == ("spanledger-results", 1)
+    assert data["model"]["schema"] == "IFC4"
+    first = next(iter(data["lines"][0]["results"].values()))
+    assert len(first["members"][0]["stations"]["x"]) == 5
+
+
+def test_json_goes_to_a_file_beside_the_table(run, tmp_path):
+    _, out, _ = run("survey", MODEL, "--json", tmp_path / "s.json")
+
+    data = json.loads((tmp_path / "s.json").read_text(encoding="utf-8"))
+    assert {line["status"] for line in data["lines"]} == {"not analysed"}
+    assert "pinned" in out
+
+
+def test_only_the_chosen_line_is_reported(run):
+    _, everything, _ = run("balance", MODEL, "--json", "-")
+    marks = [line["mark"] for line in json.loads(everything)["lines"]]
+    _, out, _ = run("balance", MODEL, "--json", "-", "--line", marks[1])
+
+    (line,) = json.loads(out)["lines"]
+    assert line["mark"] == marks[1]
+
+
+def test_rules_are_listed_and_printed(run):
+    _, listed, _ = run("rules")
+    assert "en-1990" in listed
+    assert "asce-7-22" in listed
+    _, printed, _ = run("rules", "en-1990")
+    assert "gamma_Q" in printed
+
+
+@pytest.mark.parametrize(
+    ("arguments", "message"),
+    [
+        (["survey", "absent.ifc"], "absent.ifc"),
+        (["survey", str(MODEL), "--job", "absent.yaml"], "absent.yaml"),
+        (["balance", str(MODEL), "--line", "X-99"], "no line 'X-99'; the nearest is"),
+        (["rules", "en-1991"], "en-1990"),
+        (["balance", str(MODEL), "--json", "/nowhere/at/all.json"], "cannot be written"),
+        (["survey", str(ROOT)], "is a folder"),
+        (["survey", str(JOB)], "quarry_lane.yaml"),
+    ],
+)
+def test_what_cannot_be_done_is_one_sentence_and_status_2(run, arguments, message):
+    status, out, err = run(*arguments)
+
+    assert (status, out) == (2, "")
+    assert message in err
+    assert err.count("\n") == 1
+    assert "Traceback" not in err
+
+
+@pytest.mark.parametrize(
+    "arguments", [["balance"], ["survey", "a.ifc", "--what"], ["post", "a.ifc"], []]
+)
+def test_a_bad_option_is_status_2(arguments, capsys):
+    with pytest.raises(SystemExit, match="2"):
+        main(arguments)
+    assert "spanledger" in capsys.readouterr().err
+
+
+def test_a_job_with_a_mistake_names_the_place(run, tmp_path):
+    job = tmp_path / "job.yaml"
+    job.write_text("actions: [{case: G, on: {}, uniform: 12}]", encoding="utf-8")
+
+    status, _, err = run("balance", MODEL, "--job", job)
+
+    assert status == 2
+    assert "'actions[0].uniform': 12 has no unit" in err
+
+
+def test_the_module_runs_and_a_closed_pipe_is_no_error():
+    command = [sys.executable, "-m", "analysis_core", "survey", str(MODEL)]
+    with subprocess.Popen(
+        command, stdout=subprocess.PIPE, stderr=subprocess.PIPE, cwd=ROOT, env={**os.environ}
+    ) as process:
+        assert process.stdout is not None
+        process.stdout.readline()
+        process.stdout.close()
+        assert process.stderr is not None
+        assert process.stderr.read() == b""
+
+
+def test_a_model_cannot_drive_the_terminal(run, tmp_path):
+    text = MODEL.read_text(encoding="utf-8").replace("'C-A1'", r"'C\X\1B\X\07[2Jevil'")
+    hostile = tmp_path / "hostile.ifc"
+    hostile.write_text(text, encoding="utf-8")
+
+    _, out, _ = run("survey", hostile)
+
+    assert "evil" in out
+    assert "\x1b" not in out
