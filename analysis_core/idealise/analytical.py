@@ -96,6 +96,8 @@ def _rest(scheme: Scheme, contact: Contact, drafts: dict[str, Draft], log: Log) 
             continue
         carried = drafts[touch.body]
         joint = carried.joints[carried.joint_of[contact.key]]
+        if joint.settled:
+            continue
         joint.vertical = RIGID
         joint.element = bar.member.global_id
         joint.reason = (

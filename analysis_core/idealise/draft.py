@@ -27,6 +27,8 @@ class DraftJoint:
     elements: list[str] = field(default_factory=list)
     reason: str = ""
     width: float = 0.0
+    settled: bool = False
+    """Whether the job file states this support, so that nothing else decides it."""
 
     @property
     def support(self) -> Support | None:

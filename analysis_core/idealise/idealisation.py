@@ -2,15 +2,21 @@
 
 from __future__ import annotations
 
-from analysis_core.building import Building
+from analysis_core.building import AxisMember, Building, Carrier, Connection
 from analysis_core.idealise import analytical, meetings
 from analysis_core.idealise.actions import put_axis_actions, put_node_actions
 from analysis_core.idealise.analytical import analytical_scheme
 from analysis_core.idealise.build import build
-from analysis_core.idealise.cases import cases_of, combinations_of, with_used
+from analysis_core.idealise.cases import canonical, cases_of, combinations_of, with_used
 from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.job_actions import put_job_actions
+from analysis_core.idealise.job_conditions import (
+    put_job_movements,
+    put_job_releases,
+    put_job_supports,
+)
 from analysis_core.idealise.log import Log
-from analysis_core.idealise.physical import physical_scheme
+from analysis_core.idealise.physical import physical_scheme, support_chains
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.properties import PropertyTable
 from analysis_core.idealise.scheme import Rest, Scheme, fault_fallen
@@ -36,11 +42,15 @@ def idealise(building: Building, settings: Settings) -> LineModel:
         physical = physical_scheme(building, settings, chooser, log)
         scheme = physical.scheme
         chooser.marks = _marks(scheme.drafts)
+        put_job_supports(scheme.drafts, settings, chooser, log)
+        support_chains(physical, settings, log)
         meetings.let_carry(physical, table, settings.tolerances, log)
     else:
         scheme = analytical_scheme(building, settings, log)
         chooser.marks = _marks(scheme.drafts)
+        put_job_supports(scheme.drafts, settings, chooser, log)
         analytical.let_carry(scheme, building, table, log)
+    put_job_releases(scheme.drafts, settings, chooser, log)
     fault_fallen(scheme.drafts, log)
 
     members = {member.global_id: member for member in building.members}
@@ -49,6 +59,17 @@ def idealise(building: Building, settings: Settings) -> LineModel:
     put_node_actions(building, placer, scheme.carriers, log)
     put_temperature_actions(building, placer, members, table, log)
     put_self_weight(weight, placer, table, log)
+
+    def case_name(name: str) -> str:
+        return canonical(name, cases)
+
+    put_job_actions(building.members, placer, settings, chooser, table, case_name, log)
+    things: list[AxisMember | Carrier | Connection] = [
+        *building.carriers,
+        *building.connections,
+        *building.members,
+    ]
+    put_job_movements(placer, settings, chooser, things, case_name, log)
 
     used = [action.case for actions in placer.actions.values() for action in actions]
     cases = with_used(cases, used, settings, log)

@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Sequence
 
 from analysis_core.building import AxisMember
 from analysis_core.idealise.draft import Bar, Draft
 from analysis_core.idealise.planes import view_axis
-from analysis_core.idealise.vectors import Vector, distance, dot, scale, subtract, unit
+from analysis_core.idealise.vectors import Vector, dot, scale, subtract, unit
 from analysis_core.model import FREE, Point
 
 
@@ -16,18 +15,13 @@ def runs_forward(ordered: Sequence[AxisMember], direction: Vector) -> bool:
     """Return whether a line runs along ``direction``, in which ``ordered`` lists its members.
 
     The start is the end nearer the first element's own start (CONTRACT section 1).  Where the
-    outer elements disagree on that, the greater length of elements drawn one way decides, then
-    the world axis nearest to the line.
+    outer elements disagree on that, the world axis nearest to the line decides.
     """
     first, last = ordered[0], ordered[-1]
     forward = _drawn_along(first, direction)
     backward = not _drawn_along(last, direction)
     if forward != backward:
         return forward
-    drawn = [(distance(m.start, m.end), _drawn_along(m, direction)) for m in ordered]
-    balance = math.fsum(size if along else -size for size, along in drawn)
-    if abs(balance) > 1e-6 * math.fsum(size for size, _ in drawn):
-        return balance > 0.0
     return dot(view_axis(direction), direction) > 0.0
 
 

@@ -180,6 +180,8 @@ def _rest(
             continue
         carried = drafts[mark]
         joint = _joint(carried, found[side.line], side, contact.key)
+        if joint.settled:
+            continue
         if joint.vertical == FREE:
             joint.vertical = RIGID
             joint.element = element

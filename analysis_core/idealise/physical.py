@@ -37,7 +37,7 @@ class PhysicalScheme:
 def physical_scheme(
     building: Building, settings: Settings, chooser: Chooser, log: Log
 ) -> PhysicalScheme:
-    """Return the drafts of a physical building with the supports found around them."""
+    """Return the drafts of a physical building with the bearings found around them."""
     tolerances = settings.tolerances
     beams, posts = _sorted_out(building, settings, log)
     surroundings = Surroundings((*building.carriers, *posts), beams, tolerances)
@@ -59,9 +59,13 @@ def physical_scheme(
     order = sorted(range(len(drafts)), key=lambda i: drafts[i].mark)
     drafts = [drafts[i] for i in order]
     found = [found[i] for i in order]
-    for draft, chain in zip(drafts, found, strict=True):
-        _support(draft, chain, settings, log)
     return PhysicalScheme(Scheme(drafts), found, bearings, links)
+
+
+def support_chains(physical: PhysicalScheme, settings: Settings, log: Log) -> None:
+    """Put supports on the drafts as found around them, where the job file does not say more."""
+    for draft, chain in zip(physical.scheme.drafts, physical.chains, strict=True):
+        _support(draft, chain, settings, log)
 
 
 def _sorted_out(
@@ -148,6 +152,8 @@ def _support(draft: Draft, chain: Chain, settings: Settings, log: Log) -> None:
         if index is None or seating.best.kind == "beam":
             continue
         joint, bearing = draft.joints[index], seating.best
+        if joint.settled:
+            continue
         joint.vertical = RIGID
         joint.element = bearing.id
         joint.elements.extend([bearing.id, *(other.id for other in seating.others)])

@@ -56,7 +56,12 @@ class Seat:
     def local(self, force: Pair) -> Pair:
         """Return (transverse, axial) of a force (right, up): see the sketch in ``model``."""
         cos, sin = self.draft.direction(self.bar)
-        return force[0] * sin - force[1] * cos, force[0] * cos + force[1] * sin
+        across, lengthwise = force[0] * sin - force[1] * cos, force[0] * cos + force[1] * sin
+        nothing = 1e-12 * (abs(force[0]) + abs(force[1]))  # what rounding leaves of a zero
+        return (
+            across if abs(across) > nothing else 0.0,
+            lengthwise if abs(lengthwise) > nothing else 0.0,
+        )
 
 
 @dataclass(slots=True)

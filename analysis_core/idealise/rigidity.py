@@ -171,7 +171,7 @@ def _shear_modulus(material: Material) -> float:
 def _stated_taper(
     taper: tuple[tuple[float, float], ...], rigidity: float, shear: Coefficients | None
 ) -> tuple[Stretch, ...]:
-    """Multiples of the rigidity at fractions of the length; depth linear between them.
+    """Multiples of the depth at fractions of the length, linear between them.
 
     The rigidity follows the cube of the depth, so its cube root is linear.
     """
@@ -184,7 +184,8 @@ def _stated_taper(
     for (low, first), (high, last) in itertools.pairwise(points):
         if high - low <= _EXTENSION:  # two values at one place: a step
             continue
-        a, b = ((rigidity * multiple) ** (1.0 / 3.0) for multiple in (first, last))
+        root = rigidity ** (1.0 / 3.0)
+        a, b = root * first, root * last
         part = None if shear is None else substituted(shear, low, high - low)
         flexural = (a,) if a == b else (a, b - a)
         stretches.append(Stretch(low, high, flexural, 3.0, part))

@@ -33,6 +33,10 @@ class Chooser:
         self._used[where] = True
         return True
 
+    def fits_line(self, selector: Selector, mark: str) -> bool:
+        """Return whether a line of this mark is meant, where the selector names lines."""
+        return _fits(selector.line, mark)
+
     def report_unused(self, log: Log) -> None:
         """Write a finding for every selector that chose nothing."""
         for where, used in self._used.items():
