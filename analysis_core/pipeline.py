@@ -30,6 +30,30 @@ from analysis_core.solving import Memory, solve_lines
 Progress = Callable[[str, float], None]
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class Reading:
+    """What stands in a file, before it is idealised.
+
+    It serves as long as the file and those settings stay that reading depends on.
+    """
+
+    file: str
+    schema: str
+    fingerprint: str
+    building: Building
+    findings: tuple[Finding, ...]
+    settings: Settings
+
+    def serves(self, settings: Settings) -> bool:
+        """Whether the file need not be read again for other settings."""
+        mine, other = self.settings, settings
+        return (mine.analysis, mine.materials, mine.tolerances) == (
+            other.analysis,
+            other.materials,
+            other.tolerances,
+        )
+
+
 @dataclass(frozen=True, slots=True)
 class Survey:
     """What was found in a file, before anything is solved."""
@@ -53,17 +77,31 @@ def survey(
     Raises IfcReadError, JobError.
     """
     settings = settings or Settings()
+    return idealised(read(path, settings, progress=progress), settings, only=only)
+
+
+def read(
+    path: str | Path, settings: Settings | None = None, *, progress: Progress | None = None
+) -> Reading:
+    """Read what stands in a file.  Raises IfcReadError."""
+    settings = settings or Settings()
     tell = progress or _silent
     tell("Reading", 0.0)
     source = ifc_source.open_model(path)
     tell("Reading", 0.5)
     building = _read(source, settings)
     tell("Reading", 1.0)
-    model = idealise.idealise(building, settings)
-    findings = tuple(dict.fromkeys((*source.findings, *building.findings, *model.findings)))
-    model = replace(model, findings=findings, names=_names(building))
+    findings = (*source.findings, *building.findings)
+    return Reading(source.name, source.schema, source.fingerprint, building, findings, settings)
+
+
+def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ()) -> Survey:
+    """Idealise what was read.  Raises JobError."""
+    model = idealise.idealise(reading.building, settings)
+    findings = tuple(dict.fromkeys((*reading.findings, *model.findings)))
+    model = replace(model, findings=findings, names=_names(reading.building))
     _check_marks(model, only)
-    return Survey(source.name, source.schema, source.fingerprint, model, findings)
+    return Survey(reading.file, reading.schema, reading.fingerprint, model, findings)
 
 
 def run(
