@@ -58,7 +58,7 @@ def refuse_idle_couples(line: Line, cases: Sequence[str]) -> None:
     for joint, action in turned.items():
         if joint in released:
             raise ModelError(
-                f"A moment of {action.moment:g} N·m acts on joint {_name(line, joint)} of line "
+                f"A moment of {action.moment:g} N·m acts on {_name(line, joint)} of line "
                 f"{line.mark} (case '{action.case}'), where nothing resists rotation: all "
                 f"{released[joint]} member ends are released and the support is not held against "
                 f"rotation. Fix one end, or move the moment."

@@ -149,8 +149,6 @@ class _Walk:
             if not last or to_tip:
                 self._move(member.end, member.start, chord * member.length)
             if member.end_spring == FREE:
-                if last and to_tip:
-                    self.turns[member.end] = self.ends[member.id, 1]
                 return index + 1
             if not last or to_tip:
                 self._turn_with(index, 1)
@@ -172,8 +170,6 @@ class _Walk:
             if (not first and index - 1 > stop) or to_tip:
                 self._move(member.start, member.end, -chord * member.length)
             if member.start_spring == FREE:
-                if first and to_tip:
-                    self.turns[member.start] = self.ends[member.id, 0]
                 return index - 1
             if not first or to_tip:
                 self._turn_with(index, 0)

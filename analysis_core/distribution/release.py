@@ -96,6 +96,9 @@ def _release_trees(
         if total > 0:
             held[inner] += (values.both + near * held[outer]) / total
             moments[inner] -= values.carried / total * moments[outer]
+        else:
+            # Released at the outer joint, where nothing else resists: its near end stays as it is.
+            held[inner] += near
         releases.append(_Release(outer, inner, np.longdouble(values.carried), total))
         waiting.append(inner)
     return releases

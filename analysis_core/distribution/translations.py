@@ -199,7 +199,14 @@ def _eliminate(
 
 
 def _check_consistent(line: Line, left_over: Floats, right: Floats) -> None:
-    if left_over.size and np.abs(left_over).max() > _SMALL * max(np.abs(right).max(), _SMALL):
+    """Refuse prescribed movements that would stretch a member of a frame.
+
+    In a beam line on a slope they are let pass: its supports bend it as they settle, and the
+    stretch is left aside as everything axial is.
+    """
+    if line.kind == "line" or not left_over.size:
+        return
+    if np.abs(left_over).max() > _SMALL * max(np.abs(right).max(), _SMALL):
         raise ModelError(
             f"Line {line.mark}: its members keep their length and cannot follow the prescribed "
             f"movements of its supports (one of them would have to change its length by "
