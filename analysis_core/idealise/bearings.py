@@ -13,7 +13,16 @@ from typing import Literal
 from analysis_core.building import AxisMember, Carrier
 from analysis_core.idealise.beams import Beam
 from analysis_core.idealise.grid_index import GridIndex
-from analysis_core.idealise.plan import Spot, centre, crossing, extent, gap_to, inside, meeting
+from analysis_core.idealise.plan import (
+    Spot,
+    area,
+    centre,
+    crossing,
+    extent,
+    gap_to,
+    inside,
+    meeting,
+)
 from analysis_core.settings import Tolerances
 
 Kind = Literal["column", "wall", "footing", "beam below", "beam", "slab"]
@@ -35,8 +44,9 @@ class Bearing:
 
     ``along`` is where it is taken to act, ``low`` and ``high`` the faces of what carries (all m
     along the beam's plan axis from its start).  ``end``: at the beam's start (0) or end (1), None
-    in between.  ``gap`` is the clear distance from the beam's end, ``distance`` that to the axis.
-    ``passes`` tells, for beams, whether the other one goes on beyond the place.
+    in between.  ``gap`` is the clear distance between both, ``distance`` that from the beam's end
+    to the axis of what carries, ``size`` its area in plan.  ``passes`` tells, for beams, whether
+    the other one goes on beyond the place.
     """
 
     id: str
@@ -48,6 +58,7 @@ class Bearing:
     end: int | None
     gap: float
     distance: float
+    size: float = 0.0
     other_along: float = 0.0
     passes: bool = True
     lengthwise: bool = False
@@ -159,15 +170,19 @@ def _beside_end(
         return
     for end in (0, 1):
         spot = beam.end_spot(last=bool(end))
-        gap = gap_to(carrier.corners, spot)
         place = beam.run * end
-        if gap > tolerances.bearing or not _holds(beam, carrier, kind, place, tolerances):
+        clear = gap_to(carrier.corners, spot)
+        gap = max(clear - beam.half_width, _lift(beam, carrier, place))
+        if clear > tolerances.bearing or not _holds(beam, carrier, kind, place, tolerances):
             continue
         middle = sum(faces) / 2.0
         if abs(middle - place) > tolerances.bearing + (faces[1] - faces[0]) / 2.0:
             continue
         off = math.dist(spot, _axis_spot(beam, carrier, place))
-        yield Bearing(carrier.global_id, carrier.name, kind, middle, *faces, end, gap, off)
+        yield Bearing(
+            carrier.global_id, carrier.name, kind, middle, *faces, end, gap, off,
+            area(carrier.corners),
+        )  # fmt: skip
 
 
 def _bearing(
@@ -180,11 +195,19 @@ def _bearing(
 ) -> Bearing:
     end = _end_at(beam, faces, along, tolerances)
     place = beam.run if end == 1 else 0.0 if end == 0 else along
-    gap = max(faces[0] - place, place - faces[1], 0.0)
+    gap = max(faces[0] - place, place - faces[1], _lift(beam, carrier, place))
     off = math.dist(beam.ray.at(place), _axis_spot(beam, carrier, place))
     if kind in ("wall", "footing"):
         off = abs(along - place)
-    return Bearing(carrier.global_id, carrier.name, kind, along, *faces, end, gap, off)
+    return Bearing(
+        carrier.global_id, carrier.name, kind, along, *faces, end, gap, off, area(carrier.corners)
+    )
+
+
+def _lift(beam: Beam, carrier: Carrier, place: float) -> float:
+    """Return the height between a carrier's top and the beam's underside, 0 where they touch."""
+    lift = beam.bottom(place) - carrier.top
+    return lift if lift > _LIFT else 0.0
 
 
 def _end_at(

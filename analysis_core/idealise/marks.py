@@ -17,6 +17,7 @@ _ROW = 0.2
 _START = 0.02
 # Levels nearer than this to each other are one level (m).
 _LEVEL = 0.5
+_NAMELESS = {"undefined", "not defined", "notdefined", "default", "unnamed", "storey", "level"}
 _NUMBERED = re.compile(
     r"(?:level|storey|story|floor|stage|etage|geschoss|niveau|lvl|l)[\s._]*(-?\d+)(?![\w.])|(-?\d+)$",
     re.IGNORECASE,
@@ -57,17 +58,22 @@ def put_marks(drafts: list[Draft], storeys: Sequence[tuple[str, float]]) -> None
 
 
 def short_name(storey: str) -> str:
-    """Return the storey's name as it stands in marks: "Level 2" is L2, "Ground Floor" GF."""
+    """Return the storey's name as it stands in marks: "Level 2" is L2, "Ground Floor" GF.
+
+    Empty where the name says nothing.
+    """
     text = storey.strip()
     match = _NUMBERED.match(text)
     if match:
         return f"L{int(match[1] or match[2])}"
+    if text.casefold() in _NAMELESS:
+        return ""
     words: list[str] = re.findall(r"[^\W_]+", text)
     if not words:
-        return "S"
+        return ""
     if len(words) == 1:
-        return str(words[0])[:6].upper()
-    return "".join(w if w.isdigit() else w[0] for w in words).upper()[:6]
+        return str(words[0])[:4].upper()
+    return "".join(w if w.isdigit() else w[0] for w in words).upper()[:4]
 
 
 def _put_storeys(
@@ -97,8 +103,8 @@ def _prefixes(
     ordered = list(dict.fromkeys(known + names))
     short: dict[str, str] = {}
     taken: set[str] = set()
-    for name in ordered:
-        base = candidate = short_name(name)
+    for index, name in enumerate(ordered, start=1):
+        base = candidate = short_name(name) or f"L{index}"
         count = 2
         while candidate in taken:
             candidate = f"{base}{chr(ord('a') + count - 2)}"

@@ -169,9 +169,8 @@ def _support(draft: Draft, chain: Chain, settings: Settings, log: Log) -> None:
         joint = draft.joints[index]
         if joint.support is None and not any(s.outer == outer for s in chain.seatings):
             which = "start" if outer < 0 else "end"
-            joint.reason = (
-                f"its {which} bears on nothing within {settings.tolerances.bearing * 1e3:.0f} mm"
-            )
+            limit = settings.tolerances.bearing * 1e3
+            joint.reason = f"free end: its {which} bears on nothing within {limit:.0f} mm"
     _report_joins(draft, chain, log)
 
 
@@ -192,8 +191,7 @@ def _fix_end(joint: DraftJoint, settings: Settings) -> str:
 
 def _reason(seating: Seating, how: str) -> str:
     bearing = seating.best
-    name = f"'{bearing.name}' " if bearing.name else ""
-    what = f"{bearing.kind} {name}(GlobalId {bearing.id})"
+    what = _called(bearing)
     if bearing.lengthwise:
         text = f"lies along {what}, which holds it at both ends of the contact; {how}"
     elif seating.outer or bearing.end is not None:
@@ -202,8 +200,13 @@ def _reason(seating: Seating, how: str) -> str:
     else:
         text = f"passes over {what}; {how}"
     if seating.others:
-        text += f"; also near: {listed(f'{b.kind} {b.id}' for b in seating.others)}"
+        text += f"; also near: {listed(_called(b) for b in seating.others)}"
     return text
+
+
+def _called(bearing: Bearing) -> str:
+    name = f"'{bearing.name}' " if bearing.name else ""
+    return f"{bearing.kind} {name}(GlobalId {bearing.id})"
 
 
 def _report_joins(draft: Draft, chain: Chain, log: Log) -> None:

@@ -86,6 +86,14 @@ def centre(corners: Sequence[Spot]) -> Spot:
     return ox + cx / (3.0 * area), oy + cy / (3.0 * area)
 
 
+def area(corners: Sequence[Spot]) -> float:
+    """Return the area of a simple outline, m²."""
+    ox, oy = corners[0]
+    ends = zip(corners, [*corners[1:], corners[0]], strict=True)
+    parts = ((a[0] - ox) * (b[1] - oy) - (b[0] - ox) * (a[1] - oy) for a, b in ends)
+    return abs(math.fsum(parts)) / 2.0
+
+
 def meeting(first: Ray, second: Ray) -> tuple[float, float] | None:
     """Return where two lines cross, as the distance along each; None where they are parallel."""
     (ax, ay), (bx, by) = first.direction, second.direction

@@ -92,11 +92,11 @@ def seat(chain: Chain, bearings: Mapping[str, list[Bearing]], tolerances: Tolera
     """Choose the bearings of a chain: one seating per place, the best candidate of each.
 
     Touching candidates come before those a gap away, then columns, walls, footings, beams below,
-    beams, slabs, then the nearest.
+    beams, slabs, then the larger and the nearer.
     """
     found: list[tuple[float, Bearing, str, int]] = []
     for number, beam in enumerate(chain.beams):
-        for bearing in bearings[beam.id]:
+        for bearing in _firm_first(bearings[beam.id], tolerances):
             run = chain.run_of(beam, bearing.along)
             outer = outer_end(chain, number, beam, bearing)
             # Beams at the same level hold up an end, or are a crossing: see ``meetings``.
@@ -111,11 +111,18 @@ def seat(chain: Chain, bearings: Mapping[str, list[Bearing]], tolerances: Tolera
         chain.seatings.append(Seating(run, best, beam_id, others, outer))
 
 
-def _preference(bearing: Bearing, tolerances: Tolerances) -> tuple[bool, int, float, str]:
+def _firm_first(bearings: list[Bearing], tolerances: Tolerances) -> list[Bearing]:
+    """Leave out what a gap parts from an end that touches something else."""
+    touched = {b.end for b in bearings if b.end is not None and b.gap <= tolerances.join}
+    return [b for b in bearings if b.gap <= tolerances.join or b.end not in touched]
+
+
+def _preference(bearing: Bearing, tolerances: Tolerances) -> tuple[bool, int, float, float, str]:
     ends_there = bearing.kind == "beam" and not bearing.passes
     return (
         bearing.gap > tolerances.join or ends_there,
         RANK[bearing.kind],
+        -round(bearing.size, 3),
         round(bearing.distance, 4),
         bearing.id,
     )
@@ -140,14 +147,16 @@ def _within(chain: Chain, run: float) -> bool:
 def _grouped(
     found: list[tuple[float, Bearing, str, int]], tolerances: Tolerances
 ) -> list[list[tuple[float, Bearing, str, int]]]:
-    """Candidates at one place: the same element, faces that overlap, or one end of the line."""
+    """Candidates at one place: within the tolerance of a bearing, of the same element, or at
+    one end of the line.  Two posts side by side hold a beam at one place; they do not clamp it.
+    """
     groups: list[list[tuple[float, Bearing, str, int]]] = []
     for item in found:
         run, bearing, _, outer = item
         if groups:
             last = groups[-1]
-            near = run - last[-1][0] <= max(
-                tolerances.join, (bearing.width + last[-1][1].width) / 2.0
+            near = run - last[0][0] <= max(
+                tolerances.bearing, (bearing.width + last[-1][1].width) / 2.0
             )
             same_end = outer != 0 and any(o == outer for *_, o in last)
             again = any(b.id == bearing.id for _, b, _, _ in last) and not bearing.lengthwise
