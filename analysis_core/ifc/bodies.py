@@ -14,19 +14,13 @@ from typing import Any, NamedTuple
 import numpy as np
 
 from analysis_core.ifc import frames, outline
-from analysis_core.ifc.curves import (
-    Measures,
-    Path,
-    Segment,
-    UnreadableShapeError,
-    read_path,
-    sampled,
-)
+from analysis_core.ifc.curves import Measures, Path, Segment, read_path, sampled
 from analysis_core.ifc.frames import WORLD, Frame, Vector
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.placements import Placements
 from analysis_core.ifc.profile_outlines import Drawn
 from analysis_core.ifc.sections import Profile, SectionReader, profile_of
+from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError, reason_of
 
 _DEEPEST_NESTING = 40
 
@@ -216,8 +210,8 @@ class BodyReader:
             return ()
         try:
             return tuple(reader(item, depth))
-        except (UnreadableShapeError, ValueError, TypeError, IndexError, AttributeError) as error:
-            self._troubles.append(f"{item.is_a()} #{item.id()}: {error}")
+        except READ_ERRORS as error:
+            self._troubles.append(f"{item.is_a()} #{item.id()}: {reason_of(error)}")
             return ()
 
     def _axis(self, representation: Any) -> Path | None:
@@ -228,8 +222,8 @@ class BodyReader:
                     return _moved_path(path, self._mapping_frame(item)) if path else None
                 if item.is_a("IfcCurve"):
                     return read_path(item, self._measures)
-            except (UnreadableShapeError, ValueError, TypeError, IndexError) as error:
-                self._troubles.append(f"axis {item.is_a()} #{item.id()}: {error}")
+            except READ_ERRORS as error:
+                self._troubles.append(f"axis {item.is_a()} #{item.id()}: {reason_of(error)}")
         return None
 
     def _mapped(self, item: Any, depth: int) -> Iterable[Item]:
@@ -330,7 +324,7 @@ class BodyReader:
         return Cut(plane[9:], normal, frame, reach)
 
     def _block(self, item: Any, depth: int) -> Iterable[Item]:
-        x, y, z = (value * self._length for value in item[1:4])
+        x, y, z = (item[i] * self._length for i in (1, 2, 3))
         rows = outline.loop([(0.0, 0.0), (x, 0.0), (x, y), (0.0, y)])
         drawn = Drawn((rows,), "rectangle", {"width": x, "depth": y})
         frame = self._placements.axes(item[0])
@@ -386,7 +380,7 @@ class BodyReader:
 
     def _box(self, item: Any, depth: int) -> Iterable[Item]:
         corner = [value * self._length for value in item[0][0]]
-        sizes = [value * self._length for value in item[1:4]]
+        sizes = [item[i] * self._length for i in (1, 2, 3)]
         corners = np.array(
             [
                 [
@@ -501,7 +495,9 @@ _STRAIGHT_CURVES = {"IfcLine", "IfcPolyline"}
 
 def _edge_points(edge: Any, measures: Measures) -> Floats:
     """Points strictly between the vertices of a curved edge."""
-    ends = [np.array(vertex[0][0], dtype=np.float64) * measures.length for vertex in edge[0:2]]
+    ends = [
+        np.array(vertex[0][0], dtype=np.float64) * measures.length for vertex in (edge[0], edge[1])
+    ]
     try:
         points = _in_space(sampled(read_path(edge.EdgeGeometry, measures)))
     except UnreadableShapeError:

@@ -15,14 +15,11 @@ import numpy as np
 
 from analysis_core.ifc import outline
 from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.unreadable import UnreadableShapeError
 
 Coordinates = tuple[float, ...]
 CHORDS_TO_THE_TURN = 128
 CHORDS_TO_A_SPLINE_SPAN = 24
-
-
-class UnreadableShapeError(ValueError):
-    """A curve, profile or body that this reader does not understand; the message says why."""
 
 
 class Segment(NamedTuple):
@@ -53,11 +50,21 @@ class Path(NamedTuple):
         return self.segments[-1].points[-1]
 
 
-class Measures(NamedTuple):
-    """Factors from the file's numbers to metres and radians."""
+class Measures:
+    """Factors from the file's numbers to metres and radians.
 
-    length: float
-    angle: float
+    The unit of angles is asked for only when an angle is met: a file without angles need not
+    assign one.
+    """
+
+    def __init__(self, length: float, angle: float | Callable[[], float] = 1.0) -> None:
+        self.length = length
+        self._angle = angle
+
+    @property
+    def angle(self) -> float:
+        """Radians per unit of plane angle."""
+        return self._angle() if callable(self._angle) else self._angle
 
 
 def read_path(curve: Any, measures: Measures) -> Path:
@@ -162,7 +169,9 @@ def _trimmed(curve: Any, measures: Measures) -> Path:
     basis, same_sense = curve[0], bool(curve[3])
     by_parameter = curve[4] == "PARAMETER"
     if basis.is_a("IfcLine"):
-        ends = tuple(_line_point(basis, trim, by_parameter, measures) for trim in curve[1:3])
+        ends = tuple(
+            _line_point(basis, trim, by_parameter, measures) for trim in (curve[1], curve[2])
+        )
         return Path((Segment(ends),))
     if not basis.is_a("IfcConic"):
         return read_path(basis, measures)

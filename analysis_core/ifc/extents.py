@@ -7,13 +7,13 @@ from typing import NamedTuple
 
 import numpy as np
 
-from analysis_core.ifc import frames
+from analysis_core.ifc import frames, outline
 from analysis_core.ifc.bodies import Curved, Item, Mesh, Prism
 from analysis_core.ifc.frames import Frame, Vector
 from analysis_core.ifc.mesh_prisms import hull
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.sections import Profile
-from analysis_core.ifc.sticks import after_cut
+from analysis_core.ifc.sticks import Stick, after_cut
 
 Corners = tuple[tuple[float, float], ...]
 
@@ -36,6 +36,19 @@ class ExtentReader:
         """Return the extent of a body placed by ``frame``; None where it has no points."""
         points = [p for item in items for p in self._points(item, frame)]
         return extent_of(points) if points else None
+
+    def of_stick(self, stick: Stick) -> Extent:
+        """Return the extent of a member drawn as an axis only: its profile, or a thin line."""
+        half = 0.05
+        around = ((-half, -half), (half, -half), (half, half), (-half, half))
+        corners = self._hull(stick.profile) if stick.profile is not None else around
+        x0, y0 = (stick.profile.moments.x, stick.profile.moments.y) if stick.profile else (0, 0)
+        points = []
+        for base in (stick.start, stick.end):
+            for x, y in corners:
+                p = frames.plus(base, stick.x_axis, x - x0)
+                points.append(frames.plus(p, stick.y_axis, y - y0))
+        return extent_of(points)
 
     def _points(self, item: Item, frame: Frame) -> Iterable[Vector]:
         if isinstance(item, Mesh | Curved):
@@ -61,7 +74,8 @@ class ExtentReader:
     def _hull(self, profile: Profile) -> tuple[tuple[float, float], ...]:
         known = self._hulls.get(id(profile))
         if known is None:
-            corners = hull(profile.corners).tolist()
+            rows = np.concatenate([outline.flattened(r, chords=16) for r in profile.drawn.loops])
+            corners = hull(rows[:, :2]).tolist()
             known = (profile, tuple((x, y) for x, y in corners))
             self._hulls[id(profile)] = known
         return known[1]

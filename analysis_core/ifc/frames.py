@@ -11,8 +11,8 @@ from collections.abc import Iterable, Sequence
 
 import numpy as np
 
-from analysis_core.ifc.curves import UnreadableShapeError
 from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.unreadable import UnreadableShapeError
 
 Vector = tuple[float, float, float]
 Frame = tuple[float, float, float, float, float, float, float, float, float, float, float, float]

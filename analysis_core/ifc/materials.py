@@ -196,7 +196,8 @@ def _modulus_findings(material: Material, known: Known | None, settings: Setting
                 "note",
                 "material-assumed",
                 f"Material '{material.name}' states no properties; by its name it was taken as "
-                f"{known.assumed} ({known.source}). State its grade or its modulus in the model, "
+                f"{known.grade}, assumed: {known.assumed} ({known.source}). State its grade or its "
+                f"modulus in the model, "
                 f"or in the job file (materials).",
             )
         ]

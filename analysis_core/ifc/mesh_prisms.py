@@ -16,11 +16,11 @@ from numpy.typing import NDArray
 
 from analysis_core.ifc import frames, outline
 from analysis_core.ifc.bodies import Curved, Mesh, Prism
-from analysis_core.ifc.curves import UnreadableShapeError
 from analysis_core.ifc.outline import Floats, Loops
 from analysis_core.ifc.profile_outlines import Drawn
 from analysis_core.ifc.recognise import recognise
 from analysis_core.ifc.sections import Profile, profile_of
+from analysis_core.ifc.unreadable import UnreadableShapeError
 
 Faces = tuple[tuple[tuple[int, ...], ...], ...]
 _HALF_WAY = 0.5013  # not quite: a cut exactly through corners is ambiguous

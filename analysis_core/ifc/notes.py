@@ -21,6 +21,7 @@ class Notes:
 
     def __init__(self) -> None:
         self._shared: dict[Finding, dict[str, None]] = {}
+        self._ranges: dict[tuple[Severity, str, str], list[tuple[float, str, str]]] = {}
         self._groups: dict[tuple[Severity, str, str, str], list[tuple[str, str]]] = {}
 
     def add(self, finding: Finding, element: str = "") -> None:
@@ -34,6 +35,27 @@ class Notes:
         self._groups.setdefault((severity, slug, what, advice), []).append(
             (entity[0] or f"#{entity.id()}", entity[2] or "")
         )
+
+    def spread(
+        self, severity: Severity, slug: str, what: str, distance: float, entity: Any
+    ) -> None:
+        """Note a distance (m) found at one more element; the finding gives their range."""
+        self._ranges.setdefault((severity, slug, what), []).append(
+            (distance, entity[0], entity[2] or "")
+        )
+
+    def no_identity(self, entity: Any) -> None:
+        """Note an element that results could not be given to."""
+        what = "whose GlobalId another element has as well" if entity[0] else "without a GlobalId"
+        self._groups.setdefault(
+            (
+                "error",
+                "duplicate-global-id",
+                f"left out: {what}",
+                "Give each element a GlobalId of its own.",
+            ),
+            [],
+        ).append((entity[0] or f"#{entity.id()}", entity[2] or ""))
 
     def left_out(self, reason: str, entity: Any) -> None:
         """Note an element that is no beam."""
@@ -84,12 +106,18 @@ class Notes:
             for finding, elements in self._shared.items()
         ]
         for (severity, slug, what, advice), items in self._groups.items():
+            head = _count(items) if what.startswith(":") else f"{_count(items)} "
+            message = f"{head}{what}. {advice}".strip()
+            result.append(Finding(severity, slug, message, tuple(i for i, _ in items)))
+        for (severity, slug, what), found in self._ranges.items():
+            sizes = [size for size, _, _ in found]
             result.append(
                 Finding(
                     severity,
                     slug,
-                    f"{_count(items)} {what}. {advice}",
-                    tuple(global_id for global_id, _ in items),
+                    f"{_count([(i, name) for _, i, name in found])}: {what} "
+                    f"({min(sizes) * 1e3:.0f} to {max(sizes) * 1e3:.0f} mm).",
+                    tuple(i for _, i, _ in found),
                 )
             )
         return result

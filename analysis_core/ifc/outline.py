@@ -16,6 +16,8 @@ from itertools import pairwise
 import numpy as np
 from numpy.typing import NDArray
 
+from analysis_core.ifc.unreadable import UnreadableShapeError
+
 Floats = NDArray[np.float64]
 Loops = tuple[Floats, ...]
 Matrix = tuple[tuple[float, float], tuple[float, float]]
@@ -112,8 +114,8 @@ def moments(loops: Sequence[Floats]) -> Moments:
 
     Green's theorem on the polygon of the vertices, plus the circular segment between each arc
     and its chord (closed form, see ``_segments``).  Works from the first vertex, so that an
-    outline drawn 1,000 km from the origin loses no digits.  Raises ValueError where the loops
-    enclose no area.
+    outline drawn 1,000 km from the origin loses no digits.  Raises UnreadableShapeError where the
+    loops enclose no area.
     """
     x0, y0 = float(loops[0][0, 0]), float(loops[0][0, 1])
     total = np.zeros(6)
@@ -124,7 +126,9 @@ def moments(loops: Sequence[Floats]) -> Moments:
         total += _raw_moments(shifted)
     area, mx, my, xx, yy, xy = (float(value) for value in total)
     if not area > 0.0:
-        raise ValueError(f"the outline encloses an area of {area:g} m²; it must be positive")
+        raise UnreadableShapeError(
+            f"the outline encloses an area of {area:g} m²; it must be positive"
+        )
     x, y = mx / area, my / area
     return Moments(area, x0 + x, y0 + y, xx - area * x * x, yy - area * y * y, xy - area * x * y)
 

@@ -4,23 +4,20 @@ from __future__ import annotations
 
 import gc
 import math
-from collections.abc import Iterable, Iterator
-from contextlib import contextmanager, suppress
+from collections.abc import Iterator
+from contextlib import contextmanager
 from dataclasses import replace
 from typing import Any
 
 from analysis_core.building import AxisMember, Building, Carrier
-from analysis_core.ifc import frames, roles
-from analysis_core.ifc.bodies import BodyReader, Shape
-from analysis_core.ifc.curves import UnreadableShapeError
+from analysis_core.ifc import roles
+from analysis_core.ifc.bodies import Shape
+from analysis_core.ifc.elements import Elements
 from analysis_core.ifc.extents import Extent, ExtentReader
 from analysis_core.ifc.frames import Frame, Vector
-from analysis_core.ifc.material_choice import NO_CHOICE, Choice, choose
-from analysis_core.ifc.materials import MaterialReader
+from analysis_core.ifc.material_choice import Choice
+from analysis_core.ifc.member_notes import note_duplicates, note_section, note_stick
 from analysis_core.ifc.notes import Notes
-from analysis_core.ifc.placements import Placements
-from analysis_core.ifc.relations import Relations
-from analysis_core.ifc.sections import SectionReader, measures_of
 from analysis_core.ifc.source import Source
 from analysis_core.ifc.sticks import (
     CurvedMemberError,
@@ -28,15 +25,20 @@ from analysis_core.ifc.sticks import (
     section_matrix,
     stick_of,
     upright,
+    with_profile,
 )
-from analysis_core.model import Material, Section
+from analysis_core.ifc.unreadable import UnreadableShapeError
+from analysis_core.model import Section
 from analysis_core.settings import Settings
 
 COLUMN_CLASSES = ("IfcColumn", "IfcPile")
-WALL_CLASSES = ("IfcWall",)
-SLAB_CLASSES = ("IfcSlab",)
-FOOTING_CLASSES = ("IfcFooting", "IfcCaissonFoundation", "IfcBearing")
-_OBLIQUE = 0.05
+OTHER_CARRIER_CLASSES = (
+    "IfcWall",
+    "IfcFooting",
+    "IfcCaissonFoundation",
+    "IfcBearing",
+    "IfcSlab",
+)
 
 
 def read_physical(source: Source, settings: Settings) -> Building:
@@ -63,243 +65,196 @@ def _collector_paused() -> Iterator[None]:
 
 class _Reader:
     def __init__(self, source: Source, settings: Settings) -> None:
-        self.source = source
-        self.file = source.file
-        self.settings = settings
-        measures = measures_of(source.units)
-        self.measures = measures
-        self.notes = Notes()
-        self.relations = Relations(self.file)
-        self.placements = Placements(self.file, measures)
-        self.sections = SectionReader(measures)
-        self.bodies = BodyReader(self.sections, self.placements, measures)
-        self.extents = ExtentReader()
-        self.materials = MaterialReader(self.file, source.units, settings)
-        self.members: list[AxisMember] = []
-        self.carriers: list[Carrier] = []
-        self.counts: dict[str, int] = {}
-        self._choices: dict[int, Choice] = {}
-        self._storeys: dict[int, str] = {}
-        self._named_sections: dict[tuple[Section, str], Section] = {}
-        self._seen: set[str] = set()
+        self._source = source
+        self._settings = settings
+        self._notes = Notes()
+        self._elements = Elements(source, settings, self._notes)
+        self._extents = ExtentReader()
+        self._members: list[AxisMember] = []
+        self._carriers: list[Carrier] = []
+        self._counts: dict[str, int] = {}
+        self._named_sections: dict[tuple[int, str], tuple[Section, Section]] = {}
+        self._steepest = math.sin(settings.tolerances.beam_slope)
+        self._ids: set[str] = set()
 
     def building(self) -> Building:
-        storeys = self._read_storeys()
+        storeys = self._elements.storeys()
         done: set[int] = set()
-        for ifc_class in self.settings.analysis.include:
-            for entity in self._by_type(ifc_class):
-                if entity.id() not in done:
-                    done.add(entity.id())
-                    self._read_beam(entity)
-        for classes, reader in (
-            (COLUMN_CLASSES, self._read_column),
-            (WALL_CLASSES + FOOTING_CLASSES + SLAB_CLASSES, self._read_carrier),
-        ):
-            for ifc_class in classes:
-                for entity in self._by_type(ifc_class):
-                    if entity.id() not in done:
-                        done.add(entity.id())
-                        reader(entity)
-        findings = [*self.notes.findings(), *self.source.units.findings()]
+        for ifc_class in self._settings.analysis.include:
+            self._read_all(ifc_class, self._read_beam, done)
+        for ifc_class in COLUMN_CLASSES:
+            self._read_all(ifc_class, self._read_column, done)
+        for ifc_class in OTHER_CARRIER_CLASSES:
+            self._read_all(ifc_class, self._read_carrier, done)
+        self._count("taken as beams", len(self._members))
+        self._note_relations()
+        note_duplicates(self._members, self._notes)
         return Building(
             route="physical",
-            schema=self.source.schema,
-            name=self.source.name,
-            members=tuple(self.members),
-            carriers=tuple(self.carriers),
-            findings=tuple(findings),
+            schema=self._source.schema,
+            name=self._source.name,
+            members=tuple(self._members),
+            carriers=tuple(self._carriers),
+            findings=(*self._notes.findings(), *self._source.units.findings()),
             storeys=storeys,
-            counts=self.counts,
+            counts=self._counts,
         )
 
-    def _by_type(self, ifc_class: str) -> Iterable[Any]:
-        try:
-            return tuple(self.file.by_type(ifc_class))
-        except RuntimeError:
-            return ()  # not a class of this schema
+    def _count(self, what: str, number: int = 1) -> None:
+        self._counts[what] = self._counts.get(what, 0) + number
 
-    def _read_storeys(self) -> tuple[tuple[str, float], ...]:
-        found = []
-        for storey in self.file.by_type("IfcBuildingStorey"):
-            name = storey.Name or storey.LongName or storey[0]
-            self._storeys[storey.id()] = name
-            elevation = (storey.Elevation or 0.0) * self.measures.length
-            if storey.ObjectPlacement is not None:
-                with suppress(UnreadableShapeError):
-                    elevation = self.placements.frame(storey.ObjectPlacement)[11]
-            found.append((name, elevation))
-        return tuple(sorted(found, key=lambda pair: pair[1]))
-
-    def _storey(self, entity: Any) -> str | None:
-        storey = self.relations.storey(entity)
-        return None if storey is None else self._storeys.get(storey.id())
-
-    def _choice(self, entity: Any) -> Choice:
-        select = self.relations.material(entity)
-        if select is None:
-            return NO_CHOICE
-        key = select.id()
-        if key not in self._choices:
-            self._choices[key] = choose(select)
-        return self._choices[key]
-
-    def _material(self, entity: Any, choice: Choice) -> Material | None:
-        if choice.material is None:
-            return None
-        material, found = self.materials.read(choice.material)
-        for finding in found:
-            self.notes.add(finding, entity[0])
-        return material
-
-    def _shape(self, entity: Any) -> Shape:
-        shape = self.bodies.read(entity[6])
-        if not shape.items and shape.axis is None:
-            # A whole may be drawn by its parts alone.
-            for part in self.relations.parts_of.get(entity.id(), ()):
-                if len(part) > 6 and part.is_a("IfcElement") and part[6] is not None:
-                    inner = self.bodies.read(part[6])
-                    try:
-                        relative = frames.compose(
-                            frames.inverse(self.placements.frame(entity[5])),
-                            self.placements.frame(part[5]),
-                        )
-                    except UnreadableShapeError:
-                        continue
-                    moved = tuple(item.moved(relative) for item in inner.items)
-                    shape = shape._replace(items=shape.items + moved)
-        return shape
+    def _read_all(self, ifc_class: str, reader: Any, done: set[int]) -> None:
+        for entity in self._elements.of_class(ifc_class):
+            key = entity.id()
+            if key in done:
+                continue
+            done.add(key)
+            self._count(entity.is_a())
+            global_id = entity[0]
+            if not global_id or global_id in self._ids:
+                self._notes.no_identity(entity)
+                continue
+            self._ids.add(global_id)
+            try:
+                reader(entity)
+            except UnreadableShapeError as error:
+                self._notes.no_shape(entity, str(error))
 
     def _read_beam(self, entity: Any) -> None:
-        ifc_class = entity.is_a()
-        self.counts[ifc_class] = self.counts.get(ifc_class, 0) + 1
-        hosts = self.relations.wholes(entity)
-        role = roles.excluded_by_role(entity, hosts, self.settings.beams)
+        elements, rules = self._elements, self._settings.beams
+        role = roles.excluded_by_role(entity, elements.relations.wholes(entity), rules)
         if role:
-            self.notes.left_out(role, entity)
+            self._leave_out(role, entity)
             return
+        frame = elements.frame(entity)
+        shape = elements.shape(entity)
+        choice = elements.choice(entity)
         try:
-            frame = self.placements.frame(entity[5])
-            shape = self._shape(entity)
-            stick = stick_of(shape).moved(frame)
+            stick = self._stick(shape, choice).moved(frame)
         except CurvedMemberError as error:
-            self.notes.curved(entity, str(error))
+            self._count("curved")
+            self._notes.curved(entity, str(error))
             return
-        except UnreadableShapeError as error:
-            self.notes.no_shape(entity, str(error))
-            return
-        choice = self._choice(entity)
-        slope = abs(stick.end[2] - stick.start[2]) / max(stick.length, 1e-12)
-        if slope > math.sin(self.settings.tolerances.beam_slope):
-            self._add_column(entity, shape, frame, stick, choice)
-            self.counts["steep"] = self.counts.get("steep", 0) + 1
-            return
+        size, rise = stick.length, stick.end[2] - stick.start[2]
         up = upright(stick.start, stick.end, stick.y_axis)
-        section, end_section = self._sections(entity, stick, choice, up)
-        sizes = roles.Sizes.of(stick.length, stick.end[2] - stick.start[2], section)
-        reason = roles.excluded_by_proportion(sizes, self.settings.beams)
+        section, end_section = self._sections(entity, stick, up)
+        sizes = roles.Sizes.of(size, rise, section)
+        reason = roles.excluded_by_proportion(sizes, rules)
         if reason:
-            self.notes.left_out(reason, entity)
-            if "panel" in reason or "slab" in reason:
-                label = "wall panel" if "panel" in reason else "slab strip"
-                self._add_carrier(entity, shape, frame, choice, f"{ifc_class} ({label})")
+            self._leave_out(reason, entity)
+            label = roles.carrier_label(reason)
+            if label and shape.items:
+                self._add_carrier(entity, shape, frame, choice, f"{entity.is_a()} ({label})")
             return
-        if section is None:
-            self.notes.no_section(entity)
-        member = AxisMember(
-            global_id=entity[0],
-            name=entity[2] or "",
-            ifc_class=ifc_class,
-            start=stick.start,
-            end=stick.end,
-            up=up,
-            section=section,
-            end_section=end_section,
-            material=self._material(entity, choice),
-            storey=self._storey(entity),
-            type_name=self._type_name(entity),
-            carries_moment=roles.carries_moment(entity),
-            axis_offset=stick.offset,
+        if abs(rise) > self._steepest * size:
+            self._count("taken as columns")
+            self._add_column(entity, shape, frame, stick, choice)
+            return
+        self._note_member(entity, stick, choice, section)
+        self._members.append(
+            AxisMember(
+                global_id=entity[0],
+                name=entity[2] or "",
+                ifc_class=entity.is_a(),
+                start=stick.start,
+                end=stick.end,
+                up=up,
+                section=section,
+                end_section=end_section,
+                material=elements.material(entity, choice),
+                storey=elements.storey(entity),
+                type_name=elements.type_name(entity),
+                carries_moment=roles.carries_moment(entity),
+                axis_offset=stick.offset,
+                note="; ".join(stick.remarks),
+            )
         )
-        self.members.append(member)
+
+    def _leave_out(self, reason: str, entity: Any) -> None:
+        self._count("left out")
+        self._notes.left_out(reason, entity)
+
+    def _stick(self, shape: Shape, choice: Choice) -> Stick:
+        stick = stick_of(shape)
+        if stick.profile is None and choice.profile is not None:
+            profile = self._elements.sections.profile(choice.profile)
+            if profile is not None:
+                return with_profile(stick, profile, choice.profile, choice.cardinal_point)
+        return stick
+
+    def _note_member(
+        self, entity: Any, stick: Stick, choice: Choice, section: Section | None
+    ) -> None:
+        sections = self._elements.sections
+        for profile in (stick.entity, stick.end_entity):
+            if profile is not None:
+                for finding in sections.findings(profile):
+                    self._notes.add(finding, entity[0])
+        note_stick(entity, stick, self._notes)
+        stated = None
+        if choice.profile is not None and choice.profile != stick.entity:
+            stated = sections.profile(choice.profile)
+        note_section(entity, section, stick.profile, stated, self._notes)
 
     def _sections(
-        self, entity: Any, stick: Stick, choice: Choice, up: Vector
+        self, entity: Any, stick: Stick, up: Vector
     ) -> tuple[Section | None, Section | None]:
         if stick.profile is None:
             return None, None
         matrix = section_matrix(stick, up)
-        section = self._named(self.sections.oriented(stick.profile, matrix, stick.entity), entity)
-        end = None
-        if stick.end_profile is not None:
-            end = self._named(
-                self.sections.oriented(stick.end_profile, matrix, stick.end_entity), entity
-            )
-        return section, end
+        oriented = self._elements.sections.oriented
+        section = self._named(oriented(stick.profile, matrix, stick.entity), entity)
+        if stick.end_profile is None:
+            return section, None
+        return section, self._named(oriented(stick.end_profile, matrix, stick.end_entity), entity)
 
     def _named(self, section: Section, entity: Any) -> Section:
+        """Give a section without a name that of the element's type; one object per name."""
         if section.name:
             return section
-        name = self._type_name(entity)
+        name = self._elements.type_name(entity)
         if not name:
             return section
-        key = (section, name)
+        key = (id(section), name)
         if key not in self._named_sections:
-            self._named_sections[key] = replace(section, name=name)
-        return self._named_sections[key]
-
-    def _type_name(self, entity: Any) -> str:
-        type_ = self.relations.type_of.get(entity.id())
-        return (type_[2] if type_ is not None else None) or entity[4] or ""
+            self._named_sections[key] = (section, replace(section, name=name))
+        return self._named_sections[key][1]
 
     def _read_column(self, entity: Any) -> None:
-        ifc_class = entity.is_a()
-        self.counts[ifc_class] = self.counts.get(ifc_class, 0) + 1
+        frame = self._elements.frame(entity)
+        shape = self._elements.shape(entity)
+        choice = self._elements.choice(entity)
         try:
-            frame = self.placements.frame(entity[5])
-            shape = self._shape(entity)
-        except UnreadableShapeError as error:
-            self.notes.no_shape(entity, str(error))
-            return
-        choice = self._choice(entity)
-        try:
-            stick = stick_of(shape).moved(frame)
+            stick = self._stick(shape, choice).moved(frame)
         except UnreadableShapeError:
-            self._add_carrier(entity, shape, frame, choice, ifc_class)
+            self._add_carrier(entity, shape, frame, choice, entity.is_a())
             return
         self._add_column(entity, shape, frame, stick, choice)
 
     def _read_carrier(self, entity: Any) -> None:
-        ifc_class = entity.is_a()
-        self.counts[ifc_class] = self.counts.get(ifc_class, 0) + 1
-        try:
-            frame = self.placements.frame(entity[5])
-            shape = self._shape(entity)
-        except UnreadableShapeError as error:
-            self.notes.no_shape(entity, str(error))
-            return
-        self._add_carrier(entity, shape, frame, self._choice(entity), ifc_class)
+        frame = self._elements.frame(entity)
+        shape = self._elements.shape(entity)
+        self._add_carrier(entity, shape, frame, self._elements.choice(entity), entity.is_a())
 
     def _add_column(
         self, entity: Any, shape: Shape, frame: Frame, stick: Stick, choice: Choice
     ) -> None:
-        extent = self.extents.extent(shape.items, frame)
+        extent = self._extents.extent(shape.items, frame)
         if extent is None:
-            self.notes.no_shape(entity, "it has an axis but no body")
-            return
+            extent = self._extents.of_stick(stick)
         start, end = stick.start, stick.end
         if start[2] > end[2]:
             start, end = end, start
         up = upright(start, end, stick.y_axis)
-        section, _ = self._sections(entity, stick._replace(start=start, end=end), choice, up)
+        section, _ = self._sections(entity, stick._replace(start=start, end=end), up)
         self._append(entity, entity.is_a(), extent, choice, start, end, section, up)
 
     def _add_carrier(
         self, entity: Any, shape: Shape, frame: Frame, choice: Choice, ifc_class: str
     ) -> None:
-        extent = self.extents.extent(shape.items, frame)
+        extent = self._extents.extent(shape.items, frame)
         if extent is None:
-            self.notes.no_shape(entity, "; ".join(shape.troubles) or "it has no representation")
-            return
+            raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
         self._append(entity, ifc_class, extent, choice)
 
     def _append(
@@ -313,7 +268,8 @@ class _Reader:
         section: Section | None = None,
         up: Vector = (1.0, 0.0, 0.0),
     ) -> None:
-        self.carriers.append(
+        elements = self._elements
+        self._carriers.append(
             Carrier(
                 global_id=entity[0],
                 name=entity[2] or "",
@@ -324,8 +280,33 @@ class _Reader:
                 start=start,
                 end=end,
                 section=section,
-                material=self._material(entity, choice) if start is not None else None,
-                storey=self._storey(entity),
+                material=elements.material(entity, choice) if start is not None else None,
+                storey=elements.storey(entity),
                 up=up,
             )
         )
+
+    def _note_relations(self) -> None:
+        relations = self._elements.relations
+        mine = {member.global_id for member in self._members}
+        for key, containers in relations.twice_contained.items():
+            entity = self._source.file.by_id(key)
+            if entity[0] in mine:
+                names = ", ".join(f"'{c[2] or c[0]}'" for c in containers)
+                self._notes.group(
+                    "note",
+                    "two-containers",
+                    f"contained in more than one place ({names}); the first was taken",
+                    "Contain each element once.",
+                    entity,
+                )
+        for relation in self._source.file.by_type("IfcRelVoidsElement"):
+            entity = relation[4]
+            if entity is not None and entity[0] in mine:
+                self._notes.group(
+                    "note",
+                    "openings-ignored",
+                    "with openings; their sections were taken without them",
+                    "Check the section at the opening by hand.",
+                    entity,
+                )

@@ -14,8 +14,9 @@ from itertools import pairwise
 from typing import Any, NamedTuple
 
 from analysis_core.ifc import outline
-from analysis_core.ifc.curves import Measures, UnreadableShapeError
+from analysis_core.ifc.curves import Measures
 from analysis_core.ifc.outline import Loops
+from analysis_core.ifc.unreadable import UnreadableShapeError
 
 
 class Drawn(NamedTuple):
@@ -68,7 +69,8 @@ def _optional(profile: Any, measures: Measures, name: str) -> float:
 
 
 def _slope(profile: Any, measures: Measures, name: str) -> float:
-    return math.tan((getattr(profile, name, None) or 0.0) * measures.angle)
+    slope = getattr(profile, name, None) or 0.0
+    return math.tan(slope * measures.angle) if slope else 0.0
 
 
 def _box(width: float, depth: float, radius: float = 0.0) -> outline.Floats:

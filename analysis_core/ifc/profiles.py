@@ -13,7 +13,6 @@ from analysis_core.ifc.curves import (
     Measures,
     Path,
     Segment,
-    UnreadableShapeError,
     closed_loop,
     read_path,
     sampled,
@@ -21,6 +20,7 @@ from analysis_core.ifc.curves import (
 from analysis_core.ifc.outline import Matrix
 from analysis_core.ifc.profile_outlines import Drawn, draw_parametric
 from analysis_core.ifc.recognise import recognise
+from analysis_core.ifc.unreadable import UnreadableShapeError
 
 _DEEPEST_NESTING = 8
 MIRRORED: Matrix = ((-1.0, 0.0), (0.0, 1.0))

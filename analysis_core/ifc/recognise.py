@@ -3,7 +3,7 @@
 Exporters often write a rolled section as a polygon.  Its properties come from the polygon all
 the same; the name of the shape and its dimensions are for the checks and for the reader.  A
 shape is named only if a section drawn from the dimensions found has the same area and inertias
-within 3 %.
+within 5 %.
 """
 
 from __future__ import annotations
@@ -18,7 +18,7 @@ from analysis_core.ifc import outline
 from analysis_core.ifc.outline import Floats, Loops, Moments
 from analysis_core.ifc.profile_outlines import Drawn
 
-_AGREEMENT = 0.03
+_AGREEMENT = 0.05
 _TIP = 0.02
 _MOST_CORNERS = 400
 Interval = tuple[float, float]
@@ -123,6 +123,8 @@ class _Upright:
         self.points: list[tuple[float, float]] = [
             (x, y) for x, y, _ in outline.flattened(rows, 32).tolist()
         ]
+        # Radii of roundings drawn as arcs: inner corners turn right, toes turn left.
+        self.inner_radius, self.toe_radius = _arc_radii(rows)
 
     def named(self) -> Found | None:
         """Return shape, dimensions and half turn (0 or pi) if it is one of the known shapes."""
@@ -185,7 +187,7 @@ class _Upright:
         half = [(0.5 * widths[0], 0.0), (0.5 * widths[0], bottom), (0.5 * web, bottom)]
         half += [(0.5 * web, self.depth - top), (0.5 * widths[1], self.depth - top)]
         half += [(0.5 * widths[1], self.depth)]
-        return ("I", d, 0.0) if self._agrees(half, (2, 3), fillet, mirrored=True) else None
+        return ("I", d, 0.0) if self._agrees(half, (2, 3), fillet, (1, 4), mirrored=True) else None
 
     def _tee(
         self, left: list[Interval], right: list[Interval], middle: list[Interval]
@@ -212,7 +214,7 @@ class _Upright:
             "fillet_radius": fillet,
         }
         turn = 0.0 if flange_up else math.pi
-        return ("tee", d, turn) if self._agrees(half, (1,), fillet, mirrored=True) else None
+        return ("tee", d, turn) if self._agrees(half, (1,), fillet, (2,), mirrored=True) else None
 
     def _channel(
         self, left: list[Interval], right: list[Interval], middle: list[Interval]
@@ -241,7 +243,7 @@ class _Upright:
             "flange_thickness": flange,
             "fillet_radius": fillet,
         }
-        return ("channel", d, 0.0) if self._agrees(corners, (3, 4), fillet) else None
+        return ("channel", d, 0.0) if self._agrees(corners, (3, 4), fillet, (2, 5)) else None
 
     def _angle(
         self, left: list[Interval], right: list[Interval], middle: list[Interval]
@@ -259,7 +261,7 @@ class _Upright:
         t = 0.5 * (other + thickness)
         corners = [(0.0, 0.0), (w, 0.0), (w, t), (t, t), (t, h), (0.0, h)]
         d = {"width": w, "depth": h, "thickness": t, "fillet_radius": fillet}
-        return ("angle", d, 0.0) if self._agrees(corners, (3,), fillet) else None
+        return ("angle", d, 0.0) if self._agrees(corners, (3,), fillet, (2, 4)) else None
 
     def _zed(
         self, left: list[Interval], right: list[Interval], middle: list[Interval]
@@ -284,7 +286,7 @@ class _Upright:
             "flange_width": width,
             "fillet_radius": fillet,
         }
-        return ("zed", d, 0.0) if self._agrees(corners, (3, 7), fillet) else None
+        return ("zed", d, 0.0) if self._agrees(corners, (3, 7), fillet, (2, 6)) else None
 
     def _lipped_channel(
         self, left: list[Interval], right: list[Interval], middle: list[Interval]
@@ -325,6 +327,8 @@ class _Upright:
 
     def _fillet(self, sharp_area: float, count: int) -> float | None:
         """Radius of ``count`` equal fillets that make up the area; None if that cannot be."""
+        if self.inner_radius:
+            return self.inner_radius
         missing = (self.real.area - sharp_area) / (count * (1.0 - 0.25 * math.pi))
         if missing < -0.02 * self.real.area or missing > (0.5 * min(self.width, self.depth)) ** 2:
             return None
@@ -336,9 +340,11 @@ class _Upright:
         corners: Sequence[tuple[float, float]],
         filleted: tuple[int, ...],
         radius: float,
+        toes: tuple[int, ...],
         mirrored: bool = False,
     ) -> bool:
-        rows = [(x, y, radius if i in filleted else 0.0) for i, (x, y) in enumerate(corners)]
+        radii = dict.fromkeys(filleted, radius) | dict.fromkeys(toes, self.toe_radius)
+        rows = [(x, y, radii.get(i, 0.0)) for i, (x, y) in enumerate(corners)]
         if mirrored:
             rows += [(-x, y, r) for x, y, r in reversed(rows)]
         return self._like(outline.anticlockwise(outline.rounded(rows)))
@@ -359,6 +365,16 @@ class _Upright:
 
     def _up_and_down(self, x: float) -> list[Interval]:
         return _chords(self.points, x)
+
+
+def _arc_radii(rows: Floats) -> tuple[float, float]:
+    """Mean radius of the arcs that turn right and of those that turn left, 0 where none."""
+    radii: tuple[list[float], list[float]] = ([], [])
+    for (x, y, bulge), (x2, y2, _) in pairwise([*rows.tolist(), rows[0].tolist()]):
+        if bulge:
+            radii[bulge > 0.0].append(outline.arc_of(x, y, x2, y2, bulge)[2])
+    right, left = (sum(r) / len(r) if r else 0.0 for r in radii)
+    return right, left
 
 
 def _chords(points: Sequence[tuple[float, float]], at: float) -> list[Interval]:

@@ -85,6 +85,15 @@ def excluded_by_proportion(sizes: Sizes, rules: BeamRules) -> str:
     return ""
 
 
+def carrier_label(reason: str) -> str:
+    """Return what something left out may still be to beams that rest on it, "" if nothing."""
+    if reason.startswith("a wall panel"):
+        return "wall panel"
+    if reason.startswith("a slab strip"):
+        return "slab strip"
+    return ""
+
+
 def predefined_type(entity: Any) -> str:
     """Return the PredefinedType of an element, "" where its schema or the file has none."""
     value = getattr(entity, "PredefinedType", None)

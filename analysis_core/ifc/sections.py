@@ -23,11 +23,13 @@ import numpy as np
 
 from analysis_core.findings import Finding
 from analysis_core.ifc import outline, slices, torsion
-from analysis_core.ifc.curves import Measures, UnreadableShapeError
+from analysis_core.ifc.curves import Measures
+from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.outline import IDENTITY, Floats, Loops, Matrix, Moments
 from analysis_core.ifc.profile_outlines import Drawn
 from analysis_core.ifc.profile_properties import Stated, stated_for
 from analysis_core.ifc.profiles import draw
+from analysis_core.ifc.unreadable import READ_ERRORS, reason_of
 from analysis_core.model import Section
 
 
@@ -109,7 +111,7 @@ class SectionReader:
         try:
             drawn = draw(entity, self._measures)
             profile = profile_of(_name(entity), entity.is_a(), drawn)
-        except (UnreadableShapeError, ValueError, TypeError, AttributeError, IndexError) as error:
+        except READ_ERRORS as error:
             if entity.id() not in self._stated:
                 self._findings[entity.id()] = (_unreadable(entity, error),)
             return None
@@ -123,7 +125,7 @@ class SectionReader:
         return profile
 
 
-def read_section(profile: Any, units: Any) -> tuple[Section | None, list[Finding]]:
+def read_section(profile: Any, units: FileUnits) -> tuple[Section | None, list[Finding]]:
     """Return the section of one profile, y along its x axis and z along its y axis.
 
     ``units`` are the FileUnits of the file.  Findings name the profile; the caller adds the
@@ -135,9 +137,9 @@ def read_section(profile: Any, units: Any) -> tuple[Section | None, list[Finding
     return section, list(reader.findings(profile))
 
 
-def measures_of(units: Any) -> Measures:
+def measures_of(units: FileUnits) -> Measures:
     """Return the factors for lengths and plane angles of a file."""
-    return Measures(units.length, units.to_si("PLANEANGLEUNIT"))
+    return Measures(units.length, lambda: units.angle)
 
 
 def profile_of(name: str, ifc_class: str, drawn: Drawn) -> Profile:
@@ -272,7 +274,8 @@ def _unreadable(entity: Any, error: Exception) -> Finding:
     return Finding(
         "warning",
         "profile-unreadable",
-        f"Profile '{_name(entity)}' (#{entity.id()}, {entity.is_a()}) gives no section: {error}. "
+        f"Profile '{_name(entity)}' (#{entity.id()}, {entity.is_a()}) gives no "
+        f"section: {reason_of(error)}. "
         f"State area and inertia in the job file (sections), or correct the profile.",
     )
 

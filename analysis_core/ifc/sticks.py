@@ -14,11 +14,12 @@ import numpy as np
 
 from analysis_core.ifc import frames
 from analysis_core.ifc.bodies import Curved, Cut, Item, Mesh, Prism, Shape
-from analysis_core.ifc.curves import Path, UnreadableShapeError, sampled
+from analysis_core.ifc.curves import Path, sampled
 from analysis_core.ifc.frames import Frame, Vector
 from analysis_core.ifc.mesh_prisms import mesh_of_prism, prism_of_mesh
 from analysis_core.ifc.outline import Floats, Matrix
 from analysis_core.ifc.sections import Profile
+from analysis_core.ifc.unreadable import UnreadableShapeError
 
 _PARALLEL = math.cos(math.radians(2.0))
 _AXIS_OVERLAP = 0.8
@@ -97,6 +98,35 @@ def stick_of(shape: Shape) -> Stick:
     return _aligned(stick, axis) if axis is not None else stick
 
 
+def with_profile(stick: Stick, profile: Profile, entity: Any, cardinal_point: int) -> Stick:
+    """Give a member drawn as an axis only the profile associated with it.
+
+    The axis runs through the cardinal point (IfcMaterialProfileSetUsage: 1 to 9 on the bounding
+    box from bottom left to top right, 10 the centroid, 11 to 14 the box in line with it); 5,
+    the middle of the box, where none is stated.  The shear centre (15 to 19) is not worked out:
+    the centroid stands for it.
+    """
+    low, high = profile.corners.min(axis=0).tolist(), profile.corners.max(axis=0).tolist()
+    x, y = profile.moments.x, profile.moments.y
+    xs, ys = (
+        (low[0], 0.5 * (low[0] + high[0]), high[0]),
+        (low[1], 0.5 * (low[1] + high[1]), high[1]),
+    )
+    point = cardinal_point or 5
+    if 1 <= point <= 9:
+        at = (xs[(point - 1) % 3], ys[(point - 1) // 3])
+    else:
+        at = {11: (x, ys[0]), 12: (xs[0], y), 13: (xs[2], y), 14: (x, ys[2])}.get(point, (x, y))
+    shift = frames.plus(tuple((x - at[0]) * c for c in stick.x_axis), stick.y_axis, y - at[1])
+    return stick._replace(
+        start=frames.plus(stick.start, shift),
+        end=frames.plus(stick.end, shift),
+        profile=profile,
+        entity=entity,
+        offset=frames.length(shift),
+    )
+
+
 def section_matrix(stick: Stick, up: Vector) -> Matrix:
     """Return the matrix from profile axes to (y, z) of the member, z along ``up``.
 
@@ -147,9 +177,11 @@ def _stick_of_axis(axis: tuple[Vector, Vector] | None, shape: Shape) -> Stick:
         reason = "; ".join(shape.troubles) or "it has no representation"
         raise UnreadableShapeError(reason)
     start, end = axis
-    across = frames.any_perpendicular(frames.unit(frames.minus(end, start)))
-    y = frames.cross(frames.unit(frames.minus(end, start)), across)
-    return Stick(start, end, across, y, None, remarks=("it has an axis but no body",))
+    along = frames.unit(frames.minus(end, start))
+    up = (0.0, 0.0, 1.0) if abs(along[2]) < 0.999 else (0.0, 1.0, 0.0)
+    y = frames.unit(frames.plus(up, along, -frames.dot(up, along)))
+    x = frames.cross(y, along)
+    return Stick(start, end, x, y, None, remarks=("it has an axis but no body",))
 
 
 def _main_prism(

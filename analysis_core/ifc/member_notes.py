@@ -1,0 +1,130 @@
+"""What is worth telling about members as they were read: offsets, oblique bending, duplicates."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import Any
+
+from analysis_core.building import AxisMember
+from analysis_core.findings import Finding
+from analysis_core.ifc.notes import Notes
+from analysis_core.ifc.sections import Profile
+from analysis_core.ifc.sticks import Stick
+from analysis_core.model import Section
+
+_OFFSET_WORTH_TELLING = 0.01
+_OBLIQUE = 0.1  # of sqrt(I_y I_z): one per cent of the stiffness
+_PROFILES_AGREE = 0.02
+_SAME_PLACE = 0.02
+
+
+def note_stick(entity: Any, stick: Stick, notes: Notes) -> None:
+    """Note what had to be assumed about a member's line, and how far its drawn axis is off."""
+    for remark in stick.remarks:
+        notes.group("note", "body-assumed", f": {remark}", "", entity)
+    if stick.offset > _OFFSET_WORTH_TELLING:
+        notes.spread(
+            "note",
+            "axis-offset",
+            "drawn axis lies off the centroid line of the body; direction and extent were taken "
+            "from the axis, the position from the body",
+            stick.offset,
+            entity,
+        )
+
+
+def note_section(
+    entity: Any,
+    section: Section | None,
+    drawn: Profile | None,
+    stated: Profile | None,
+    notes: Notes,
+) -> None:
+    """Note a missing section, one that bends sideways, and profiles that contradict the body."""
+    if section is None:
+        notes.no_section(entity)
+        return
+    both = math.sqrt(section.inertia * section.inertia_lateral)
+    if abs(section.inertia_product) > _OBLIQUE * both > 0.0:
+        free = 1.0 - (section.inertia_product / both) ** 2
+        notes.group(
+            "warning",
+            "oblique-bending",
+            f"with section '{section.name}', which bends sideways too; analysed as held sideways "
+            f"(by floor or roof). Free to move sideways it would have "
+            f"{100.0 * free:.0f} % of the inertia that was used",
+            "See that something holds them sideways.",
+            entity,
+        )
+    if drawn is not None and stated is not None:
+        pairs = (
+            (drawn.moments.area, stated.moments.area),
+            (drawn.moments.yy, stated.moments.yy),
+            (drawn.moments.xx, stated.moments.xx),
+        )
+        if any(abs(mine - theirs) > _PROFILES_AGREE * theirs for mine, theirs in pairs):
+            notes.group(
+                "warning",
+                "profile-disagrees",
+                f"whose body is '{drawn.name or drawn.drawn.shape}' of "
+                f"{drawn.moments.area * 1e4:.4g} cm², while the associated profile is "
+                f"'{stated.name or stated.drawn.shape}' of {stated.moments.area * 1e4:.4g} cm²; "
+                f"the body was taken",
+                "Correct the body or the profile.",
+                entity,
+            )
+
+
+def note_duplicates(members: list[AxisMember], notes: Notes) -> None:
+    """Take out members drawn twice in the same place, and say so."""
+    doubled = _doubles(members)
+    for first, second in doubled:
+        notes.add(
+            Finding(
+                "warning",
+                "duplicate-member",
+                f"{second.ifc_class} '{second.name}' lies where {first.ifc_class} '{first.name}' "
+                f"lies, with the same section; it was left out. Delete one of them.",
+                (second.global_id, first.global_id),
+            )
+        )
+    gone = {second.global_id for _, second in doubled}
+    members[:] = [member for member in members if member.global_id not in gone]
+
+
+def _doubles(members: Sequence[AxisMember]) -> list[tuple[AxisMember, AxisMember]]:
+    found = []
+    seen: dict[tuple[int, int, int], list[AxisMember]] = {}
+    for member in members:
+        middle = [(a + b) / 2.0 for a, b in zip(member.start, member.end, strict=True)]
+        cell = tuple(math.floor(c / _SAME_PLACE) for c in middle)
+        twin = next(
+            (
+                other
+                for offset in _NEIGHBOURS
+                for other in seen.get(
+                    (cell[0] + offset[0], cell[1] + offset[1], cell[2] + offset[2]), ()
+                )
+                if _same(member, other)
+            ),
+            None,
+        )
+        if twin is not None:
+            found.append((twin, member))
+        else:
+            seen.setdefault((cell[0], cell[1], cell[2]), []).append(member)
+    return found
+
+
+_NEIGHBOURS = [(i, j, k) for i in (-1, 0, 1) for j in (-1, 0, 1) for k in (-1, 0, 1)]
+
+
+def _same(a: AxisMember, b: AxisMember) -> bool:
+    straight = max(math.dist(a.start, b.start), math.dist(a.end, b.end))
+    crossed = max(math.dist(a.start, b.end), math.dist(a.end, b.start))
+    if min(straight, crossed) > _SAME_PLACE:
+        return False
+    if a.section is None or b.section is None:
+        return a.section is b.section
+    return abs(a.section.area - b.section.area) < 0.02 * a.section.area
