@@ -23,6 +23,12 @@ from analysis_core.ifc.unit_tables import (
 
 _DEEPEST = 8
 _NAMED_SIZE_TOLERANCE = 0.01
+# Kinds that projects assign in many ways.  Others are kilograms, kelvins and their like.
+_DOUBTFUL = frozenset(
+    kind
+    for kind, (dimension, _, _) in KINDS.items()
+    if dimension[1] or (dimension[0] and dimension[2])
+) - {"MASSDENSITYUNIT", "MASSPERLENGTHUNIT", "ACCELERATIONUNIT"}
 
 
 class UnitError(ValueError):
@@ -100,15 +106,22 @@ class FileUnits:
         return tuple(kind for kind in kinds or KINDS if kind not in self._factors)
 
     def findings(self) -> tuple[Finding, ...]:
-        """Return a finding for each kind that was used without being assigned."""
+        """Return a finding for each kind that was used without being assigned.
+
+        None where no unit is assigned at all (``read_units`` says that), and none for angles:
+        every program takes an angle without a unit in radians.
+        """
+        if not self._factors:
+            return ()
         return tuple(
             Finding(
-                "warning" if basis == "SI" else "note",
+                "warning" if kind in _DOUBTFUL and basis == "SI" else "note",
                 "missing-unit",
                 f"'{self._file_name}' assigns no unit of {_kind_name(kind)} ({kind}); values were "
                 f"taken as {_basis_text(basis)}. Assign the unit in the project if that is wrong.",
             )
             for kind, (_, basis) in sorted(self._assumed.items())
+            if kind != "PLANEANGLEUNIT"
         )
 
     def _assume(self, kind: str) -> float:

@@ -193,10 +193,12 @@ def _missing(ids: Ints, references: Ints) -> Ints:
     """Return the numbers that are referred to but not given, in order."""
     top = int(max(ids.max(initial=0), references.max(initial=0)))
     if top > _TABLE_LIMIT:
-        return np.setdiff1d(references, ids).astype(np.int64)
+        missing: Ints = np.setdiff1d(references, ids)
+        return missing
     given = np.zeros(top + 1, bool)
     given[ids] = True
-    return np.unique(references[~given[references]])
+    absent: Ints = np.unique(references[~given[references]])
+    return absent
 
 
 def _check_numbers(ids: Ints, name: str) -> None:
