@@ -153,7 +153,9 @@ def _on_carrier(beam: Beam, carrier: Carrier, tolerances: Tolerances) -> Iterato
     if contact[1] - contact[0] > _ALONG and kind != "column":
         under = right <= tolerances.join and left >= -tolerances.join
         if under and _holds(beam, carrier, kind, sum(contact) / 2.0, tolerances):
-            yield from _lengthwise(beam, carrier, kind, contact)
+            top = beam.top(sum(contact) / 2.0)
+            on_top = carrier.top <= top + tolerances.join
+            yield from _lengthwise(beam, carrier, kind, contact, everywhere=on_top)
         return
     along = _axis_place(beam, carrier, kind, faces, contact)
     place = min(max(along, 0.0), beam.run)
@@ -274,7 +276,7 @@ def _on_slab(
     lift = [beam.bottom(place) - carrier.top for place in contact]
     rests = [abs(gap) <= _LIFT for gap in lift]
     if all(rests):
-        yield from _lengthwise(beam, carrier, "slab", contact)
+        yield from _lengthwise(beam, carrier, "slab", contact, everywhere=True)
         return
     for place, on in zip(contact, rests, strict=True):
         end = 0 if place <= 0.0 else 1 if place >= beam.run else None
@@ -285,10 +287,17 @@ def _on_slab(
 
 
 def _lengthwise(
-    beam: Beam, carrier: Carrier, kind: Kind, contact: tuple[float, float]
+    beam: Beam, carrier: Carrier, kind: Kind, contact: tuple[float, float], *, everywhere: bool
 ) -> Iterator[Bearing]:
-    """A beam that lies along what carries it is held at both ends of the contact."""
-    for place in contact:
+    """A beam that lies along what carries it.
+
+    On top of it (a wall plate) it is held at every metre or less; within it (a lintel, with the
+    wall going on above) at both ends of the contact, as an opening is probably below.
+    """
+    size = contact[1] - contact[0]
+    count = max(1, math.ceil(size / _ALONG - 1e-6)) if everywhere else 1
+    for step in range(count + 1):
+        place = contact[0] + size * step / count
         end = 0 if place <= 0.0 else 1 if place >= beam.run else None
         yield Bearing(
             carrier.global_id, carrier.name, kind, place, place, place, end, 0.0, 0.0,

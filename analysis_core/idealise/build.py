@@ -23,7 +23,7 @@ def build(
     """Return the line of a draft, None (with a finding) where its parts do not fit together."""
     number_spans(draft)
     stretches: dict[str, tuple[Stretch, ...] | None] = {}
-    faults = list(draft.faults)
+    faults = [clause for _, clause in draft.faults]
     for bar in draft.bars:
         if bar.member.global_id in stretches:
             continue
@@ -41,11 +41,11 @@ def build(
             log=log,
             line=draft.mark,
         )
-    for fault in draft.faults:
+    for slug, clause in draft.faults:
         log.add(
             "error",
-            "line-not-analysed",
-            f"{_capital(draft.kind)} {draft.mark} is not analysed: {fault}.",
+            slug,
+            f"{_capital(draft.kind)} {draft.mark} is not analysed: {clause}.",
             draft.elements,
             draft.mark,
         )

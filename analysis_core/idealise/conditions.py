@@ -33,9 +33,12 @@ def _support(draft: Draft, joint: DraftJoint, node: Node, restraint: Restraint, 
     held = in_plane(restraint, draft.plane)
     if held.skew and draft.kind == "frame":
         draft.faults.append(
-            f"the support at connection {named(connection)} holds the frame in a slanting "
-            f"direction only; supports of a frame are vertical and horizontal. Turn the support's "
-            f"axes, or replace the slanting roller by a short pin-ended member"
+            (
+                "skew-support",
+                f"the support at connection {named(connection)} holds the frame in a slanting "
+                f"direction only; supports of a frame are vertical and horizontal. Turn its "
+                f"axes, or replace the slanting roller by a short pin-ended member",
+            )
         )
     elif held.skew:
         log.add(
@@ -116,8 +119,11 @@ def _sliding(
             joint.horizontal = in_series(joint.horizontal, crosswise)
         else:
             draft.faults.append(
-                f"{where} is free to slide across its axis where it meets other members, which "
-                f"cannot be represented. Put the release at a support, or remove it"
+                (
+                    "sliding-release",
+                    f"{where} is free to slide across its axis where it meets other members, which "
+                    f"cannot be represented. Put the release at a support, or remove it",
+                )
             )
     if lengthwise < RIGID and draft.kind == "line":
         log.add(
@@ -135,8 +141,11 @@ def _sliding(
             joint.vertical = in_series(joint.vertical, lengthwise)
         else:
             draft.faults.append(
-                f"{where} is free to slide along its axis, which cannot be represented within a "
-                f"frame of axially rigid members. Put the release at a support, or remove it"
+                (
+                    "sliding-release",
+                    f"{where} is free to slide along its axis, which cannot be represented in a "
+                    f"frame of axially rigid members. Put the release at a support, or remove it",
+                )
             )
 
 

@@ -60,7 +60,10 @@ class Bar:
 
 @dataclass(slots=True)
 class Draft:
-    """A line or frame with its joints and bars.  ``faults``: why it cannot be solved."""
+    """A line or frame with its joints and bars.
+
+    ``faults`` say why it cannot be solved: the slug of the finding, and a clause for it.
+    """
 
     plane: Plane
     kind: Kind
@@ -68,7 +71,7 @@ class Draft:
     bars: list[Bar]
     mark: str = ""
     storey: str | None = None
-    faults: list[str] = field(default_factory=list)
+    faults: list[tuple[str, str]] = field(default_factory=list)
 
     def length(self, bar: Bar) -> float:
         """Return the distance between the joints of a bar in m."""

@@ -51,7 +51,7 @@ def idealise(building: Building, settings: Settings) -> LineModel:
         put_job_supports(scheme.drafts, settings, chooser, log)
         analytical.let_carry(scheme, building, table, log)
     put_job_releases(scheme.drafts, settings, chooser, log)
-    fault_fallen(scheme.drafts, log)
+    fault_fallen(scheme.drafts)
 
     members = {member.global_id: member for member in building.members}
     placer = Placer(scheme.drafts)

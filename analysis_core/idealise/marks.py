@@ -17,7 +17,7 @@ _ROW = 0.2
 _START = 0.02
 # Levels nearer than this to each other are one level (m).
 _LEVEL = 0.5
-_NAMELESS = {"undefined", "not defined", "notdefined", "default", "unnamed", "storey", "level"}
+_NAMELESS = {"undefined", "not defined", "notdefined", "default", "unnamed", "unknown", "storey"}
 _NUMBERED = re.compile(
     r"(?:level|storey|story|floor|stage|etage|geschoss|niveau|lvl|l)[\s._]*(-?\d+)(?![\w.])|(-?\d+)$",
     re.IGNORECASE,

@@ -172,6 +172,7 @@ def _support(draft: Draft, chain: Chain, settings: Settings, log: Log) -> None:
             limit = settings.tolerances.bearing * 1e3
             joint.reason = f"free end: its {which} bears on nothing within {limit:.0f} mm"
     _report_joins(draft, chain, log)
+    _report_lying(draft, chain, log)
 
 
 def _fix_end(joint: DraftJoint, settings: Settings) -> str:
@@ -193,7 +194,7 @@ def _reason(seating: Seating, how: str) -> str:
     bearing = seating.best
     what = _called(bearing)
     if bearing.lengthwise:
-        text = f"lies along {what}, which holds it at both ends of the contact; {how}"
+        text = f"lies along {what}, one of its points of contact; {how}"
     elif seating.outer or bearing.end is not None:
         clear = f", {bearing.gap * 1e3:.0f} mm clear of it" if bearing.gap > 1e-3 else ""
         text = f"end bears on {what}, {bearing.distance * 1e3:.0f} mm from its axis{clear}; {how}"
@@ -202,6 +203,21 @@ def _reason(seating: Seating, how: str) -> str:
     if seating.others:
         text += f"; also near: {listed(_called(b) for b in seating.others)}"
     return text
+
+
+def _report_lying(draft: Draft, chain: Chain, log: Log) -> None:
+    carriers = {s.best.id: s.best for s in chain.seatings if s.best.lengthwise}
+    for bearing in carriers.values():
+        count = sum(s.best.id == bearing.id for s in chain.seatings)
+        log.add(
+            "warning",
+            "lies-along",
+            f"Line {draft.mark} lies along {_called(bearing)}; it is taken as held at {count} "
+            f"points of the contact. State its supports in the job file where that is not so "
+            f"(a lintel over an opening, say).",
+            (*draft.elements, bearing.id),
+            draft.mark,
+        )
 
 
 def _called(bearing: Bearing) -> str:

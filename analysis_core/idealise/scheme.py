@@ -7,7 +7,6 @@ from dataclasses import dataclass, field
 
 from analysis_core.idealise.carrying import Body, Contact, standing
 from analysis_core.idealise.draft import Draft
-from analysis_core.idealise.log import Log
 from analysis_core.model import FREE
 
 
@@ -40,16 +39,16 @@ def body_of(draft: Draft) -> Body:
     return Body(draft.mark, grounds)
 
 
-def fault_fallen(drafts: Iterable[Draft], log: Log) -> None:
+def fault_fallen(drafts: Iterable[Draft]) -> None:
     """Mark every draft that is held up by too little, counting the lines that carry it."""
     drafts = list(drafts)
     upright = standing([body_of(draft) for draft in drafts], ())
     for draft in drafts:
         if draft.mark not in upright:
-            _report(draft, log)
+            _fault(draft)
 
 
-def _report(draft: Draft, log: Log) -> None:
+def _fault(draft: Draft) -> None:
     held = [joint for joint in draft.joints if joint.vertical > FREE]
     if not held:
         what = "nothing holds it up"
@@ -61,11 +60,4 @@ def _report(draft: Draft, log: Log) -> None:
     message = (
         f"{what}. Give the model a support there, or state one in the job file (supports: on, end)"
     )
-    draft.faults.append(message)
-    log.add(
-        "error",
-        "no-support",
-        f"{draft.kind.capitalize()} {draft.mark} is not analysed: {message}.",
-        draft.elements,
-        draft.mark,
-    )
+    draft.faults.append(("no-support", message))

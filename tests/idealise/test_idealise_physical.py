@@ -194,3 +194,28 @@ def test_an_edge_beam_over_cantilever_tips_is_carried_by_them():
     assert spans(line) == [4.0, 5.0]
     assert [j.element for j in line.joints] == ["A0.0", "A4.0", "A9.0"]
     assert "no-support" not in slugs(found)
+
+
+def test_a_beam_on_top_of_a_wall_is_held_along_it_and_a_lintel_at_its_ends():
+    """4.5 m of contact: five intervals of 0.9 m.  The same wall 0.5 m higher makes it a lintel."""
+    carriers = [column("C1", 9.0, 0.0, 0.0, Z - 0.2)]
+    on_top = wall("W", (-1.0, -0.1, 0.0), (4.5, 0.1, Z - 0.2))
+    around = wall("W", (-1.0, -0.1, 0.0), (4.5, 0.1, Z + 0.7))
+    plate = beam("B", (0.0, 0.0, Z), (9.0, 0.0, Z))
+    laid = idealise(house([plate], [on_top, *carriers]), Settings())
+    lintel = idealise(house([plate], [around, *carriers]), Settings())
+
+    assert spans(only(laid)) == [0.9] * 5 + [4.5]
+    assert spans(only(lintel)) == [4.5, 4.5]
+    assert finding(laid, "lies-along").severity == "warning"
+
+
+def test_of_two_posts_side_by_side_one_is_the_bearing():
+    posts = [column("C0", 0.0, 0.0, 0.0, Z - 0.2), column("C1", 6.0, 0.0, 0.0, Z - 0.2)]
+    extra = column("thin", 0.3, 0.0, 0.0, Z - 0.2, side=0.05)
+    line = only(
+        idealise(house([beam("B", (0.0, 0.0, Z), (6.0, 0.0, Z))], [*posts, extra]), Settings())
+    )
+
+    assert spans(line) == [6.0]
+    assert "also near: column 'thin'" in line.joints[0].reason
