@@ -1,0 +1,1 @@
+"""The calculation sheet: one self-contained HTML file.  Templates only, no analysis."""

@@ -1,0 +1,65 @@
+"""HTML as data: every text is escaped unless it was built here.
+
+Names in a model are hostile text; nothing of them can become markup, a script or an address.
+"""
+
+from __future__ import annotations
+
+import html
+import unicodedata
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+_EMPTY = frozenset({"br", "col", "hr", "img", "meta", "line", "path", "rect", "circle", "polyline"})
+
+
+@dataclass(frozen=True, slots=True)
+class Markup:
+    """A piece of finished HTML or SVG."""
+
+    text: str
+
+
+Content = Markup | str | Iterable["Markup | str"]
+
+
+def tag(name: str, /, *children: Content, **attributes: str | float | None) -> Markup:
+    """Return an element.  ``class_`` stands for class, underscores for hyphens."""
+    shown = "".join(
+        f' {key.rstrip("_").replace("_", "-")}="{_attribute(value)}"'
+        for key, value in attributes.items()
+        if value is not None
+    )
+    inner = "".join(text_of(child) for child in children)
+    if name in _EMPTY and not inner:
+        return Markup(f"<{name}{shown}/>")
+    return Markup(f"<{name}{shown}>{inner}</{name}>")
+
+
+def text_of(content: Content) -> str:
+    """Return content as HTML, escaping what is plain text."""
+    if isinstance(content, Markup):
+        return content.text
+    if isinstance(content, str):
+        return html.escape(visible(content), quote=False)
+    return "".join(text_of(item) for item in content)
+
+
+def join(*items: Content) -> Markup:
+    """Return several pieces as one."""
+    return Markup("".join(text_of(item) for item in items))
+
+
+def visible(text: str) -> str:
+    """Replace characters that would hide or reorder text by their code."""
+    hidden = ("Cc", "Cf", "Cs", "Co", "Zl", "Zp")
+    return "".join(
+        c if unicodedata.category(c) not in hidden or c == "\n" else f"\\u{ord(c):04x}"
+        for c in text
+    )
+
+
+def _attribute(value: str | float) -> str:
+    if isinstance(value, str):
+        return html.escape(visible(value), quote=True)
+    return f"{round(value, 2):g}"
