@@ -60,7 +60,7 @@ def _refined(inverse: Floats, matrix: Floats, right: Floats, *, steps: int) -> F
     for _ in range(steps):
         change = inverse @ (right - matrix @ found)
         found = found + change
-        if np.all(np.abs(change).max(1) <= 1e-15 * np.abs(found).max(1)):
+        if np.all(np.abs(change).max(1, initial=0.0) <= 1e-15 * np.abs(found).max(1, initial=0.0)):
             break
     return found
 
