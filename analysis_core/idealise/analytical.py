@@ -40,10 +40,16 @@ def let_carry(scheme: Scheme, building: Building, table: PropertyTable, log: Log
     for draft in scheme.drafts:
         for joint in draft.joints:
             at_node.setdefault(joint.key, []).append(draft)
+    leaning = {
+        draft.mark
+        for draft in scheme.drafts
+        if any(slug == "not-in-a-vertical-plane" for slug, _ in draft.faults)
+    }
     bodies = [body_of(draft) for draft in scheme.drafts]
     contacts = []
     for key, meeting in sorted(at_node.items()):
         connection = connections.get(key)
+        meeting = [draft for draft in meeting if draft.mark not in leaning]
         if len(meeting) < 2 or connection is None or _share_column(meeting, key):
             continue
         if vertical_stiffness(connection.restraint) == RIGID:

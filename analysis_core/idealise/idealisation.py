@@ -15,6 +15,7 @@ from analysis_core.idealise.job_conditions import (
     put_job_releases,
     put_job_supports,
 )
+from analysis_core.idealise.leaning import fault_leaning
 from analysis_core.idealise.log import Log
 from analysis_core.idealise.physical import physical_scheme, support_chains
 from analysis_core.idealise.placing import Placer
@@ -49,6 +50,7 @@ def idealise(building: Building, settings: Settings) -> LineModel:
         scheme = analytical_scheme(building, settings, log)
         chooser.marks = _marks(scheme.drafts)
         put_job_supports(scheme.drafts, settings, chooser, log)
+        fault_leaning(scheme.drafts, settings.tolerances)
         analytical.let_carry(scheme, building, table, log)
     put_job_releases(scheme.drafts, settings, chooser, log)
     fault_fallen(scheme.drafts)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
 from dataclasses import dataclass, field
 
 from analysis_core.idealise.draft import Bar, Draft
@@ -265,29 +264,3 @@ def _linear(first: float, last: float, run: float) -> tuple[float, ...]:
     if abs(first - last) <= 1e-12 * max(abs(first), abs(last)):
         return (first,) if first else ()
     return first, (last - first) / run
-
-
-def total(actions: Iterable[Action], drafts: Draft) -> Pair:
-    """Return the sum (right, down) of the forces of ``actions`` on a draft, for checks."""
-    right = down = 0.0
-    for action in actions:
-        if isinstance(action, JointForce):
-            right += action.horizontal
-            down += action.vertical
-        elif isinstance(action, PointForce | DistributedForce):
-            cos, sin = drafts.direction(drafts.bars[action.member])
-            across, along = _resultant(action)
-            right += across * sin + along * cos
-            down += across * cos - along * sin
-    return right, down
-
-
-def _resultant(action: PointForce | DistributedForce) -> Pair:
-    if isinstance(action, PointForce):
-        return action.transverse, action.axial
-    size = action.end - action.start
-    across, along = (
-        sum(c * size ** (i + 1) / (i + 1) for i, c in enumerate(part))
-        for part in (action.transverse, action.axial)
-    )
-    return across, along
