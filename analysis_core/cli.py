@@ -58,6 +58,13 @@ def main(arguments: Sequence[str] | None = None) -> int:
     except OSError as error:
         where = f"'{error.filename}': " if error.filename else ""
         return _failed(f"{where}{error.strerror or error}.")
+    except Exception as error:
+        if os.environ.get("SPANLEDGER_DEBUG"):
+            raise
+        return _failed(
+            f"A fault in the program itself stopped the work ({type(error).__name__}: {error}); "
+            f"nothing was written. Please report it with the model; SPANLEDGER_DEBUG=1 shows where."
+        )
 
 
 def _failed(message: str) -> int:

@@ -9,11 +9,11 @@ from __future__ import annotations
 import math
 import unicodedata
 from collections import Counter
-from collections.abc import Iterable, Sequence
+from collections.abc import Callable, Iterable, Sequence
 
 from analysis_core.findings import Finding, Severity
 from analysis_core.model import Joint, Line, LineModel, Member, Support
-from analysis_core.results import LineResult, MemberEnvelope, Outcome
+from analysis_core.results import Extreme, LineResult, MemberEnvelope, Outcome
 from analysis_core.units import DisplayUnits
 
 CAUTION = (
@@ -107,7 +107,11 @@ def _cell(text: str, width: int, column: int) -> str:
 
 
 def _headline(model: LineModel, file: str, schema: str) -> str:
-    spans = sum(m.role == "span" for line in model.lines for m in line.members)
+    spans = sum(
+        any(m.role == "span" for m, _ in members)
+        for line in model.lines
+        for _, members in spans_of(line)
+    )
     frames = sum(line.kind == "frame" for line in model.lines)
     kinds = f"{len(model.lines) - frames} beam lines" + (f", {frames} frames" if frames else "")
     title = f"{safe(model.title)}: " if model.title else ""
@@ -176,8 +180,8 @@ def _effects_table(outcome: Outcome, units: DisplayUnits) -> str:
         if result.status != "balanced":
             rows.append((safe(result.line.mark), "not analysed", *[""] * 10))
             continue
-        for member in result.line.members:
-            rows.append(_effects_row(result, member, units))
+        for name, members in spans_of(result.line):
+            rows.append(_effects_row(result, name, members, units))
         sources += _governing(result)
     if not rows:
         return "No lines were found."
@@ -185,35 +189,78 @@ def _effects_table(outcome: Outcome, units: DisplayUnits) -> str:
     return table(head, below, rows) + (f"\n\nGoverning:\n{notes}" if notes else "")
 
 
-def _effects_row(result: LineResult, member: Member, units: DisplayUnits) -> Sequence[str]:
-    strength = _member_envelope(result, "strength", member.id)
-    service = _member_envelope(result, "serviceability", member.id)
-    name = str(member.span) if member.span else f"leg {member.id}" if member.role == "leg" else str(
-        member.id
-    )  # fmt: skip
-    row = [safe(result.line.mark), name, units.number(member.length, "length")]
-    if strength is None:
-        row += ["-"] * 6
-    else:
-        shear = max(strength.shear_max, strength.shear_min, key=lambda e: abs(e.value))
-        for extreme, quantity in (
-            (strength.sagging, "moment"),
-            (strength.hogging, "moment"),
-            (shear, "force"),
-        ):
-            row += [units.number(extreme.value, quantity), units.number(extreme.x, "length")]
-    if service is None:
-        return [*row, "-", "-", "-"]
-    worst = max(service.deflection_down, service.deflection_up, key=lambda e: abs(e.value))
-    ratio = f"L/{member.length / abs(worst.value):.0f}" if abs(worst.value) > 1e-9 else "-"
-    return [*row, units.number(worst.value, "deflection"), units.number(worst.x, "length"), ratio]
+def spans_of(line: Line) -> list[tuple[str, list[tuple[Member, float]]]]:
+    """Return name and members of each span, then each leg; members with their place in it (m).
+
+    A span may consist of several members, cut at nodes that nothing supports.
+    """
+    groups: dict[str, list[tuple[Member, float]]] = {}
+    for member in line.members:
+        if member.span:
+            name = str(member.span)
+        else:
+            name = f"{'leg' if member.role == 'leg' else 'member'} {member.id}"
+        group = groups.setdefault(name, [])
+        offset = group[-1][1] + group[-1][0].length if group else 0.0
+        group.append((member, offset))
+    return list(groups.items())
 
 
-def _member_envelope(result: LineResult, state: str, member: int) -> MemberEnvelope | None:
+def _effects_row(
+    result: LineResult, name: str, members: list[tuple[Member, float]], units: DisplayUnits
+) -> Sequence[str]:
+    length = sum(member.length for member, _ in members)
+    row = [safe(result.line.mark), name, units.number(length, "length")]
+    strength = [(_envelope_of(result, "strength", m), at) for m, at in members]
+    service = [(_envelope_of(result, "serviceability", m), at) for m, at in members]
+    for pick, choose, quantity in _COLUMNS:
+        found = [(pick(e), at) for e, at in strength if e is not None]
+        row += _extreme_cells(found, choose, quantity, units)
+    found = [(_deflection(e), at) for e, at in service if e is not None]
+    row += _extreme_cells(found, _largest, "deflection", units)
+    worst = max((abs(e.value) for e, _ in found), default=0.0)
+    return [*row, f"L/{length / worst:.0f}" if worst > 1e-9 else "-"]
+
+
+def _extreme_cells(
+    found: list[tuple[Extreme, float]],
+    choose: Callable[[Extreme], float],
+    quantity: str,
+    units: DisplayUnits,
+) -> list[str]:
+    if not found:
+        return ["-", "-"]
+    extreme, offset = max(found, key=lambda pair: choose(pair[0]))
+    place = units.number(offset + extreme.x, "length")
+    return [units.number(extreme.value, quantity), place]
+
+
+def _largest(extreme: Extreme) -> float:
+    return abs(extreme.value)
+
+
+def _shear(envelope: MemberEnvelope) -> Extreme:
+    return max(envelope.shear_max, envelope.shear_min, key=_largest)
+
+
+def _deflection(envelope: MemberEnvelope) -> Extreme:
+    return max(envelope.deflection_down, envelope.deflection_up, key=_largest)
+
+
+_COLUMNS: tuple[
+    tuple[Callable[[MemberEnvelope], Extreme], Callable[[Extreme], float], str], ...
+] = (
+    (lambda e: e.sagging, lambda e: e.value, "moment"),
+    (lambda e: e.hogging, lambda e: -e.value, "moment"),
+    (_shear, _largest, "force"),
+)
+
+
+def _envelope_of(result: LineResult, state: str, member: Member) -> MemberEnvelope | None:
     envelope = result.envelopes.get(state)
     if envelope is None:
         return None
-    return next((m for m in envelope.members if m.member == member), None)
+    return next((m for m in envelope.members if m.member == member.id), None)
 
 
 def _governing(result: LineResult) -> list[str]:
