@@ -117,7 +117,7 @@ class Shape(NamedTuple):
 
 
 NOTHING = Shape()
-_NOT_A_BODY = {"axis", "footprint", "box", "annotation", "cog", "profile", "reference",
+_NOT_A_BODY = {"body", "axis", "footprint", "box", "annotation", "cog", "profile", "reference",
                "clearance", "lighting", "survey", "surface", "plan", "boundingbox"}  # fmt: skip
 
 
@@ -134,7 +134,7 @@ class BodyReader:
         self._troubles: list[str] = []
         self._readers: dict[str, Callable[[Any, int], Iterable[Item]]] = {
             "IfcExtrudedAreaSolid": self._extrusion,
-            "IfcExtrudedAreaSolidTapered": self._extrusion,
+            "IfcExtrudedAreaSolidTapered": self._tapered_extrusion,
             "IfcMappedItem": self._mapped,
             "IfcBooleanResult": self._boolean,
             "IfcBooleanClippingResult": self._boolean,
@@ -174,17 +174,18 @@ class BodyReader:
         body: tuple[Item, ...] = ()
         box: tuple[Item, ...] = ()
         self._troubles = []
-        for representation in definition[2]:
-            identifier = (representation[1] or "").lower()
-            if identifier == "axis":
-                axis = axis or self._axis(representation)
-            elif identifier == "body":
+        representations = definition.get_argument(2)
+        for representation in representations:
+            identifier = representation.get_argument(1)
+            if identifier == "Body" or (identifier or "").lower() == "body":
                 body = body + self._items(representation)
-            elif identifier in ("box", "boundingbox"):
+            elif identifier == "Axis" or (identifier or "").lower() == "axis":
+                axis = axis or self._axis(representation)
+            elif (identifier or "").lower() in ("box", "boundingbox"):
                 box = self._items(representation)
         if not body:
-            for representation in definition[2]:
-                if (representation[1] or "").lower() not in _NOT_A_BODY | {"body"}:
+            for representation in representations:
+                if (representation[1] or "").lower() not in _NOT_A_BODY:
                     body = self._items(representation)
                     if body:
                         break
@@ -194,10 +195,10 @@ class BodyReader:
         return Shape(axis, body, troubles)
 
     def _items(self, representation: Any) -> tuple[Item, ...]:
-        found: list[Item] = []
-        for item in representation[3] or ():
-            found.extend(self._item(item, 0))
-        return tuple(found)
+        items: tuple[Any, ...] = representation.get_argument(3) or ()
+        if len(items) == 1:
+            return tuple(self._item(items[0], 0))
+        return tuple(found for item in items for found in self._item(item, 0))
 
     def _item(self, item: Any, depth: int) -> Iterable[Item]:
         reader = self._readers.get(item.is_a())
@@ -215,8 +216,10 @@ class BodyReader:
             return ()
 
     def _axis(self, representation: Any) -> Path | None:
-        for item in representation[3] or ():
+        for item in representation.get_argument(3) or ():
             try:
+                if item.is_a() == "IfcPolyline":
+                    return read_path(item, self._measures)
                 if item.is_a("IfcMappedItem"):
                     path = self._axis(item[0][1])
                     return _moved_path(path, self._mapping_frame(item)) if path else None
@@ -269,27 +272,30 @@ class BodyReader:
             origin[2] * factor if len(origin) > 2 else 0.0,
         )  # fmt: skip
 
-    def _extrusion(self, item: Any, depth: int) -> Iterable[Item]:
-        swept = item[0]
+    def _extrusion(self, item: Any, depth: int) -> tuple[Item, ...]:
+        swept, position = item.get_argument(0), item.get_argument(1)
         profile = self._profile(swept)
-        frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
-        dx, dy, dz = self._placements.direction(item[2])
+        frame = self._placements.shared_axes(position) if position is not None else WORLD
+        dx, dy, dz = self._placements.direction(item.get_argument(2))
         norm = math.sqrt(dx * dx + dy * dy + dz * dz)
-        extent = item[3] * self._length
+        extent = item.get_argument(3) * self._length
         if not norm > 0.0 or not extent > 0.0:
             raise UnreadableShapeError(f"an extrusion of depth {item[3]} has no extent")
         factor = extent / norm
         vector = frames.direction(frame, dx * factor, dy * factor, dz * factor)
-        if len(item) > 4:
-            end = self._profile(item[4])
-            return (Prism(profile, frame, vector, swept, end, item[4]),)
         return (Prism(profile, frame, vector, swept),)
+
+    def _tapered_extrusion(self, item: Any, depth: int) -> tuple[Item, ...]:
+        (prism,) = self._extrusion(item, depth)
+        assert isinstance(prism, Prism)
+        return (prism._replace(end_profile=self._profile(item[4]), end_entity=item[4]),)
 
     def _profile(self, entity: Any) -> Profile:
         profile = self._sections.profile(entity)
         if profile is None:
             name = entity[1] or entity.is_a()
-            raise UnreadableShapeError(f"its profile '{name}' (#{entity.id()}) cannot be read")
+            reason = self._sections.reason(entity)
+            raise UnreadableShapeError(f"its profile '{name}' (#{entity.id()}): {reason}")
         return profile
 
     def _boolean(self, item: Any, depth: int) -> Iterable[Item]:

@@ -119,7 +119,9 @@ def _straight_through(points: Sequence[Coordinates], exact: bool = True) -> Path
 
 
 def _polyline(curve: Any, measures: Measures) -> Path:
-    return _straight_through([_scaled(point[0], measures.length) for point in curve[0]])
+    return _straight_through(
+        [_scaled(point.get_argument(0), measures.length) for point in curve.get_argument(0)]
+    )
 
 
 def _indexed(curve: Any, measures: Measures) -> Path:

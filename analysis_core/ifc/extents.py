@@ -34,8 +34,26 @@ class ExtentReader:
 
     def extent(self, items: Sequence[Item], frame: Frame) -> Extent | None:
         """Return the extent of a body placed by ``frame``; None where it has no points."""
+        if len(items) == 1 and isinstance(items[0], Prism):
+            found = self._upright_extent(items[0], frame)
+            if found is not None:
+                return found
         points = [p for item in items for p in self._points(item, frame)]
         return extent_of(points) if points else None
+
+    def _upright_extent(self, prism: Prism, frame: Frame) -> Extent | None:
+        """The extent of an uncut prism that stands upright: its profile's hull, placed."""
+        if prism.cuts or prism.end_profile is not None:
+            return None
+        vx, vy, vz = frames.direction(frame, *prism.vector)
+        whole = frames.compose(frame, prism.frame)
+        if abs(vx) + abs(vy) > 1e-9 * abs(vz) or abs(whole[2]) + abs(whole[5]) > 1e-9:
+            return None
+        a, b, _, c, d, _, _, _, _, x0, y0, z0 = whole
+        corners = [(a * x + c * y + x0, b * x + d * y + y0) for x, y in self._hull(prism.profile)]
+        if a * d - b * c < 0.0:
+            corners.reverse()
+        return Extent(tuple(corners), min(z0, z0 + vz), max(z0, z0 + vz))
 
     def of_stick(self, stick: Stick) -> Extent:
         """Return the extent of a member drawn as an axis only: its profile, or a thin line."""

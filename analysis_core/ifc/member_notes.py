@@ -17,6 +17,7 @@ _OFFSET_WORTH_TELLING = 0.01
 _OBLIQUE = 0.1  # of sqrt(I_y I_z): one per cent of the stiffness
 _PROFILES_AGREE = 0.02
 _SAME_PLACE = 0.02
+_CELL = 1.0
 
 
 def note_stick(entity: Any, stick: Stick, notes: Notes) -> None:
@@ -97,27 +98,28 @@ def _doubles(members: Sequence[AxisMember]) -> list[tuple[AxisMember, AxisMember
     found = []
     seen: dict[tuple[int, int, int], list[AxisMember]] = {}
     for member in members:
-        middle = [(a + b) / 2.0 for a, b in zip(member.start, member.end, strict=True)]
-        cell = tuple(math.floor(c / _SAME_PLACE) for c in middle)
+        cells = _cells(member)
         twin = next(
-            (
-                other
-                for offset in _NEIGHBOURS
-                for other in seen.get(
-                    (cell[0] + offset[0], cell[1] + offset[1], cell[2] + offset[2]), ()
-                )
-                if _same(member, other)
-            ),
-            None,
+            (other for cell in cells for other in seen.get(cell, ()) if _same(member, other)), None
         )
         if twin is not None:
             found.append((twin, member))
         else:
-            seen.setdefault((cell[0], cell[1], cell[2]), []).append(member)
+            for cell in cells:
+                seen.setdefault(cell, []).append(member)
     return found
 
 
-_NEIGHBOURS = [(i, j, k) for i in (-1, 0, 1) for j in (-1, 0, 1) for k in (-1, 0, 1)]
+def _cells(member: AxisMember) -> set[tuple[int, int, int]]:
+    """Cells of a coarse grid in which the middle lies, its neighbours too where it is near."""
+    (x, y, z), (x2, y2, z2) = member.start, member.end
+    middle = (0.5 * (x + x2), 0.5 * (y + y2), 0.5 * (z + z2))
+    low = [math.floor((c - 0.5 * _SAME_PLACE) / _CELL) for c in middle]
+    high = [math.floor((c + 0.5 * _SAME_PLACE) / _CELL) for c in middle]
+    if low == high:
+        return {(low[0], low[1], low[2])}
+    return {(i, j, k) for i in (low[0], high[0]) for j in (low[1], high[1])
+            for k in (low[2], high[2])}  # fmt: skip
 
 
 def _same(a: AxisMember, b: AxisMember) -> bool:

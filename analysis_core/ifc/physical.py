@@ -138,6 +138,9 @@ class _Reader:
         size, rise = stick.length, stick.end[2] - stick.start[2]
         up = upright(stick.start, stick.end, stick.y_axis)
         section, end_section = self._sections(entity, stick, up)
+        if section is None and choice.profile is not None:
+            # No outline, but perhaps values in the property sets of the associated profile.
+            section = elements.sections.section(choice.profile)
         sizes = roles.Sizes.of(size, rise, section)
         reason = roles.excluded_by_proportion(sizes, rules)
         if reason:

@@ -17,6 +17,7 @@ from analysis_core.ifc.frames import WORLD, Frame, Vector
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
 _DEEPEST_NESTING = 200
+Rotation = tuple[float, float, float, float, float, float, float, float, float]
 
 
 class Placements:
@@ -28,6 +29,8 @@ class Placements:
         self._measures = measures
         self._known: dict[int, Frame] = {}
         self._directions: dict[int, Vector] = {}
+        self._rotations: dict[tuple[Vector, Vector], Rotation] = {}
+        self._shared: dict[int, Frame] = {}
         self._grid_of_axis: dict[int, Any] | None = None
 
     def frame(self, placement: Any) -> Frame:
@@ -37,10 +40,15 @@ class Placements:
         """
         if placement is None:
             return WORLD
-        key = placement.id()
-        known = self._known.get(key)
-        if known is not None:
-            return known
+        if placement.is_a() == "IfcLocalPlacement":  # nearly always, and the parent known
+            parent = placement.get_argument(0)
+            known = WORLD if parent is None else self._known.get(parent.id())
+            if known is not None:
+                return frames.compose(known, self.axes(placement.get_argument(1)))
+        return self._chained(placement)
+
+    def _chained(self, placement: Any) -> Frame:
+        """Place a placement and, before it, every parent that is not yet known."""
         chain = []
         here = placement
         while here is not None and here.id() not in self._known:
@@ -54,33 +62,51 @@ class Placements:
             self._known[link.id()] = frame
         return frame
 
+    def shared_axes(self, placement: Any) -> Frame:
+        """Return ``axes`` of a placement that many solids are likely to share, worked out once."""
+        key = placement.id()
+        known = self._shared.get(key)
+        if known is None:
+            known = self._shared[key] = self.axes(placement)
+        return known
+
     def axes(self, placement: Any) -> Frame:
         """Return the frame of an IfcAxis2Placement3D (or 2D) in its own surroundings."""
         scale = self._length
-        if placement.is_a("IfcAxis2PlacementLinear"):
+        kind = placement.is_a()
+        if kind == "IfcAxis2PlacementLinear":
             return self._along_curve(placement)
-        if placement.is_a("IfcAxis2Placement2D"):
-            x, y = placement[0][0][:2]
-            ref = placement[1][0] if placement[1] else (1.0, 0.0)
-            return frames.axes_frame((x * scale, y * scale, 0.0), None, (ref[0], ref[1], 0.0))
-        location = placement[0][0]
+        location = placement.get_argument(0).get_argument(0)
         x, y = location[0] * scale, location[1] * scale
+        if kind == "IfcAxis2Placement2D":
+            ref = placement[1][0] if placement[1] else (1.0, 0.0)
+            return frames.axes_frame((x, y, 0.0), None, (ref[0], ref[1], 0.0))
         z = location[2] * scale if len(location) > 2 else 0.0
-        axis, ref = placement[1], placement[2]
+        axis, ref = placement.get_argument(1), placement.get_argument(2)
         if axis is None and ref is None:
             return (1.0, 0.0, 0.0, 0.0, 1.0, 0.0, 0.0, 0.0, 1.0, x, y, z)
+        if axis is not None and ref is not None:
+            return (*self._rotation(axis, ref), x, y, z)
         return frames.axes_frame(
             (x, y, z),
             self.direction(axis) if axis is not None else None,
             self.direction(ref) if ref is not None else None,
         )
 
+    def _rotation(self, axis: Any, ref: Any) -> Rotation:
+        """Directions of a frame from two IfcDirections, which buildings share or repeat."""
+        z, x = self.direction(axis), self.direction(ref)
+        known = self._rotations.get((z, x))
+        if known is None:
+            known = self._rotations[(z, x)] = frames.axes_frame((0.0, 0.0, 0.0), z, x)[:9]
+        return known
+
     def direction(self, entity: Any) -> Vector:
         """Return the components of an IfcDirection, not normalised."""
         key = entity.id()
         known = self._directions.get(key)
         if known is None:
-            ratios = entity[0]
+            ratios = entity.get_argument(0)
             known = (ratios[0], ratios[1], ratios[2] if len(ratios) > 2 else 0.0)
             self._directions[key] = known
         return known

@@ -21,6 +21,7 @@ class Relations:
         self.whole_of: Grouped = {}
         self.parts_of: dict[int, tuple[Any, ...]] = {}
         self.twice_contained: dict[int, list[Any]] = {}
+        self._storey_of: Grouped = {}
         self._spread(file, "IfcRelDefinesByType", self.type_of)
         self._spread(file, "IfcRelAssociatesMaterial", self.material_of)
         self._contain(file)
@@ -50,7 +51,16 @@ class Relations:
 
     def storey(self, element: Any) -> Any:
         """Return the IfcBuildingStorey an element belongs to, or None."""
-        here = self.container(element)
+        container = self.container(element)
+        if container is None:
+            return None
+        key = container.id()
+        if key not in self._storey_of:
+            self._storey_of[key] = self._storey_above(container)
+        return self._storey_of[key]
+
+    def _storey_above(self, spatial: Any) -> Any:
+        here = spatial
         for _ in range(20):
             if here is None or here.is_a("IfcBuildingStorey"):
                 return here

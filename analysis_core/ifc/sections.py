@@ -41,9 +41,11 @@ class Profile(NamedTuple):
     drawn: Drawn
     moments: Moments
     corners: Floats
+    """Corners (n, 2) such that their bounding box in the profile's axes is that of the outline."""
+    size: tuple[float, float]
+    """Extent along x and along y, m."""
     torsion: float
     warping: float
-    """Corners (n, 2) such that their bounding box in the profile's axes is that of the outline."""
 
 
 class SectionReader:
@@ -54,6 +56,7 @@ class SectionReader:
         self._stated = stated or {}
         self._profiles: dict[int, Profile | None] = {}
         self._findings: dict[int, tuple[Finding, ...]] = {}
+        self._reasons: dict[int, str] = {}
         self._sections: dict[tuple[object, ...], Section] = {}
         self._kept: list[Profile] = []  # whose identity is a key: they must not go away
 
@@ -64,6 +67,11 @@ class SectionReader:
             self._profiles[key] = self._read(entity)
         return self._profiles[key]
 
+    def reason(self, entity: Any) -> str:
+        """Return why a profile cannot be read, "" where it can."""
+        self.profile(entity)
+        return self._reasons.get(entity.id(), "")
+
     def findings(self, entity: Any) -> tuple[Finding, ...]:
         """Return what was noticed about a profile; elements are not filled in."""
         self.profile(entity)
@@ -72,17 +80,10 @@ class SectionReader:
     def section(self, entity: Any, matrix: Matrix = IDENTITY) -> Section | None:
         """Return the section as it lies in a member: y = row 0, z = row 1 of ``matrix``."""
         profile = self.profile(entity)
-        turned = tuple(round(value, 9) for row in matrix for value in row)
-        key = (entity.id(), turned)
-        known = self._sections.get(key)
-        if known is not None:
-            return known
-        stated = self._stated.get(entity.id())
         if profile is None:
+            stated = self._stated.get(entity.id())
             return stated.section(_name(entity), matrix) if stated else None
-        section = self.oriented(profile, matrix, entity)
-        self._sections[key] = section
-        return section
+        return self.oriented(profile, matrix, entity)
 
     def oriented(self, profile: Profile, matrix: Matrix, entity: Any = None) -> Section:
         """Return the section of a profile as it lies in a member, worked out once.
@@ -90,11 +91,11 @@ class SectionReader:
         ``entity`` is the profile's entity where it has one; identical outlines share their
         section, as exporters write a profile of its own for every member.
         """
-        turned = tuple(round(value, 9) for row in matrix for value in row)
-        near = (id(profile), turned)
-        known = self._sections.get(near)
+        exact = (id(profile), matrix)
+        known = self._sections.get(exact)
         if known is not None:
             return known
+        turned = tuple(round(value, 9) for row in matrix for value in row)
         stated = self._stated.get(entity.id()) if entity is not None else None
         shared = (_fingerprint(profile), turned, id(stated) if stated else None)
         section = self._sections.get(shared)
@@ -103,7 +104,7 @@ class SectionReader:
             if stated:
                 section = stated.applied(section, profile.moments, matrix)
             self._sections[shared] = section
-        self._sections[near] = section
+        self._sections[exact] = section
         self._kept.append(profile)
         return section
 
@@ -112,6 +113,7 @@ class SectionReader:
             drawn = draw(entity, self._measures)
             profile = profile_of(_name(entity), entity.is_a(), drawn)
         except READ_ERRORS as error:
+            self._reasons[entity.id()] = reason_of(error)
             if entity.id() not in self._stated:
                 self._findings[entity.id()] = (_unreadable(entity, error),)
             return None
@@ -146,12 +148,14 @@ def profile_of(name: str, ifc_class: str, drawn: Drawn) -> Profile:
     """Return the profile of an outline: moments, corners, torsion and warping constants."""
     moments = outline.moments(drawn.loops)
     corners = np.concatenate([outline.split_at_extremes(rows)[:, :2] for rows in drawn.loops])
+    width, depth = np.ptp(corners, axis=0).tolist()
     return Profile(
         name,
         ifc_class,
         drawn,
         moments,
         corners,
+        (width, depth),
         _torsion_constant(drawn, moments),
         _warping_constant(drawn),
     )

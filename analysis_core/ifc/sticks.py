@@ -155,6 +155,8 @@ def upright(start: Vector, end: Vector, depth_axis: Vector) -> Vector:
 def _axis_ends(path: Path | None) -> tuple[Vector, Vector] | None:
     if path is None:
         return None
+    if len(path.segments) == 1 and not path.segments[0].curved:
+        return _in_space(path.start), _in_space(path.end)
     points = sampled(path)
     if points.shape[1] == 2:
         points = np.column_stack([points, np.zeros(len(points))])
@@ -172,6 +174,10 @@ def _axis_ends(path: Path | None) -> tuple[Vector, Vector] | None:
     return (first[0], first[1], first[2]), (last[0], last[1], last[2])
 
 
+def _in_space(p: Sequence[float]) -> Vector:
+    return p[0], p[1], p[2] if len(p) > 2 else 0.0
+
+
 def _stick_of_axis(axis: tuple[Vector, Vector] | None, shape: Shape) -> Stick:
     if axis is None:
         reason = "; ".join(shape.troubles) or "it has no representation"
@@ -187,6 +193,10 @@ def _stick_of_axis(axis: tuple[Vector, Vector] | None, shape: Shape) -> Stick:
 def _main_prism(
     items: Sequence[Item], axis: tuple[Vector, Vector] | None
 ) -> tuple[Prism, list[str]]:
+    if len(items) == 1 and isinstance(items[0], Prism):
+        found = _lengthwise(items[0], axis)
+        if isinstance(found, Prism):
+            return found, [found.remark] if found.remark else []
     prisms: list[Prism] = []
     curved: list[Curved] = []
     meshes: list[Mesh] = [item for item in items if isinstance(item, Mesh)]
@@ -224,9 +234,9 @@ def _lengthwise(prism: Prism, axis: tuple[Vector, Vector] | None) -> Prism | Cur
 
     Plates are exported as beams whose extrusion runs across the thickness.
     """
-    low, high = prism.profile.corners.min(axis=0), prism.profile.corners.max(axis=0)
+    width, depth = prism.profile.size
     x, y = frames.length(prism.frame[0:3]), frames.length(prism.frame[3:6])
-    across = max(float(high[0] - low[0]) * x, float(high[1] - low[1]) * y)
+    across = max(width * x, depth * y)
     if frames.length(prism.vector) >= across:
         return prism
     if axis is not None:
