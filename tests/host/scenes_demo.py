@@ -29,11 +29,11 @@ def draw():
     session = Session(Path("demo.ifc"), Path("demo.yaml"))
     session.receive(demo.outcome())
     desk.sessions[doc.Name] = session
-    desk.refresh_all(doc.Name)
+    desk._show_all(doc.Name)
     settle()
     picture_of_screen("demo_window")
     image = picture_of_view("demo_view")
     return {
         role: count_pixels(image, on_white(VIEW, role), 12)
         for role in ("line", "sagging", "hogging")
-    } | {"shown": desk.list.model.shown()}
+    } | {"shown": desk.panels.list.model.shown()}

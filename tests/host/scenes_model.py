@@ -36,9 +36,9 @@ def copied(model=PHYSICAL, job=JOB):
 def opened(desk, path):
     """Open a model as the user does, and wait for its lines."""
     desk.open_model(path)
-    wait_until(lambda: desk.work is None, what="the run")
-    assert desk.session.outcome is not None, desk.running.message.text()
-    wait_until(lambda: desk.behind is None or desk.behind.isFinished(), what="the building")
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    assert desk.session.outcome is not None, desk.panels.running.message.text()
+    wait_until(lambda: not desk.runs.busy_behind, what="the building")
     settle()
 
 
@@ -50,9 +50,9 @@ def tour():
     picture_of_screen("model_window")
     picture_of_view("model_view")
     return {
-        "lines": desk.list.model.shown(),
-        "states": sorted({row.state for row in desk.list.model._rows}),
-        "message": desk.running.message.text(),
+        "lines": desk.panels.list.model.shown(),
+        "states": sorted({row.state for row in desk.panels.list.model._rows}),
+        "message": desk.panels.running.message.text(),
         "shape": len(desk.session.shape.elements),
     }
 
@@ -78,7 +78,7 @@ def decide():
         click(canvas, place)
 
     def then():
-        wait_until(lambda: desk.work is None, what="the run")
+        wait_until(lambda: not desk.runs.busy, what="the run")
         settle(0.2)
         found["sagging"].append(governing(desk.session.outcome.lines[0])[0])
 
@@ -90,7 +90,7 @@ def decide():
     box.setCurrentIndex(box.findData("fixed"))
     click(widget(QtWidgets.QPushButton, "SpanledgerDecideSupport"))
     then()
-    found["moved"] = desk.running.message.text()
+    found["moved"] = desk.panels.running.message.text()
     found["job"] = job.read_text(encoding="utf-8")
     found["dashed"] = sum(s.dashed for s in canvas.drawing.strokes)
     picture_of_screen("decide_fixed")
@@ -105,7 +105,7 @@ def decide():
     picture_of_screen("decide_member")
     widget(QtWidgets.QLineEdit, "SpanledgerActionValue").setText("nonsense")
     click(widget(QtWidgets.QPushButton, "SpanledgerDecideAction"))
-    found["refused"] = desk.running.message.text()
+    found["refused"] = desk.panels.running.message.text()
     found["still"] = job.read_text(encoding="utf-8") == found["job"]
     widget(QtWidgets.QLineEdit, "SpanledgerActionValue").setText("30")
     click(widget(QtWidgets.QPushButton, "SpanledgerDecideAction"))

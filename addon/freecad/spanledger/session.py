@@ -6,7 +6,8 @@ these texts, so that nothing else has to be reversible.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from collections.abc import Callable
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -18,6 +19,8 @@ from analysis_core.units import DisplayUnits, display_units
 
 if TYPE_CHECKING:
     from analysis_core.ifc.shapes import BuildingShape
+    from analysis_core.pipeline import Reading
+    from analysis_core.solving import Memory
 
 
 @dataclass(slots=True)
@@ -41,6 +44,10 @@ class Session:
     """The run before the last decision, to show what moved."""
     posted: set[str] = field(default_factory=set)
     stale: bool = False
+    reading: Reading | None = None
+    """What stands in the file; kept so that a decision need not read it again."""
+    stamp: tuple[int, int] | None = None
+    memory: Memory | None = None
     shape: BuildingShape | None = None
     """The bodies of the building, once they were made."""
     done: list[Decision] = field(default_factory=list)
@@ -60,8 +67,13 @@ class Session:
 
     @property
     def settings(self) -> Settings:
-        """What the job file says now."""
-        return job.parse(self.text)
+        """What the job file says now; a rule set of the user's own is sought beside it."""
+        settings = job.parse(self.text)
+        rules = settings.rules
+        if rules.name.endswith((".yaml", ".yml")) and not Path(rules.name).is_absolute():
+            beside = str(self.job_path.resolve().parent / rules.name)
+            settings = replace(settings, rules=replace(rules, name=beside))
+        return settings
 
     @property
     def units(self) -> DisplayUnits:
@@ -102,6 +114,51 @@ class Session:
         self.text = decision.after
         return decision.title
 
+    def run(self, settings: Settings, progress: Callable[[str, float], None]) -> Outcome:
+        """Read where needed, idealise and solve; may be called in another thread.
+
+        Raises IfcReadError, JobError, and whatever ``progress`` raises.
+        """
+        from analysis_core import pipeline
+        from analysis_core.solving import Memory
+
+        stamp = _stamp(self.path)
+        reading = self.reading
+        if reading is None or stamp != self.stamp or not reading.serves(settings):
+            reading = pipeline.read(self.path, settings, progress=progress)
+        memory = self.memory or Memory()
+        survey = pipeline.idealised(reading, settings)
+        outcome = pipeline.solve(survey, settings, progress=progress, memory=memory)
+        self.reading, self.stamp, self.memory = reading, stamp, memory
+        return outcome
+
+    def read_again(self) -> None:
+        """Take the model and the job file from the disk at the next run.
+
+        Raises JobError where the job file cannot be read or understood.
+        """
+        text = _read(self.job_path) if self.job_path.exists() else ""
+        job.parse(text)
+        self.reading = None
+        if text != self.text:
+            self.text = text
+            self.done.clear()  # what was undone before would overwrite another's edit
+            self.undone.clear()
+
+    def changed_on_disk(self) -> bool:
+        """Whether the model or the job file is another than the run was made with."""
+        try:
+            text = _read(self.job_path) if self.job_path.exists() else ""
+        except JobError:
+            return True
+        return text != self.text or _stamp(self.path) != self.stamp
+
+    def take_posted(self, outcome: Outcome, target: Path) -> None:
+        """Remember what was written; where it went into the model itself, its bytes changed."""
+        self.posted |= {r.fingerprint for r in outcome.lines if r.fingerprint}
+        if target == self.path:
+            self.reading, self.stamp = None, _stamp(self.path)
+
     def receive(self, outcome: Outcome) -> None:
         """Take the outcome of a run."""
         self.previous, self.outcome = self.outcome, outcome
@@ -124,6 +181,15 @@ class Session:
 def job_beside(path: Path) -> Path:
     """Return where the job file of a model stands: the same name, ending in .yaml."""
     return path.with_suffix(".yaml")
+
+
+def _stamp(path: Path) -> tuple[int, int] | None:
+    """Return what tells that a file was written anew; None where it is gone."""
+    try:
+        found = path.stat()
+    except OSError:
+        return None
+    return found.st_mtime_ns, found.st_size
 
 
 def _read(path: Path) -> str:

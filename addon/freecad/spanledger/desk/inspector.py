@@ -6,10 +6,11 @@ A decision is sent as a title and a change of the job file's text; nothing is co
 from __future__ import annotations
 
 from collections.abc import Callable
-from typing import Any
+from typing import Any, get_args
 
-from analysis_core.model import RIGID, Action
+from analysis_core.model import RIGID, Action, Nature
 from analysis_core.results import LineResult, Outcome
+from analysis_core.settings import Settings
 from analysis_core.units import DisplayUnits
 
 from ..present import decisions
@@ -50,14 +51,18 @@ class Inspector(QtWidgets.QScrollArea):
         """Show nothing."""
         self._begin("")
 
-    def show_line(self, result: LineResult, outcome: Outcome, units: DisplayUnits) -> None:
-        """Show facts about a whole line."""
+    def show_line(
+        self, result: LineResult, outcome: Outcome, settings: Settings, units: DisplayUnits
+    ) -> None:
+        """Show facts about a whole line, and the rules that all lines are combined by."""
         self._begin(translate("Spanledger", "Line {mark}").format(mark=result.line.mark))
         self._facts(line_facts(result, outcome, units))
         hint = translate("Spanledger", "Click a bearing, a span or an action to decide on it.")
         label = QtWidgets.QLabel(hint)
         label.setWordWrap(True)
         self._layout.addWidget(label)
+        self._rules_form(settings.rules.name)
+        self._cases_form(outcome)
         self._layout.addStretch(1)
 
     def show_joint(
@@ -115,6 +120,47 @@ class Inspector(QtWidgets.QScrollArea):
         self._layout.addStretch(1)
 
     # Forms.
+    def _rules_form(self, current: str) -> None:
+        from analysis_core.rules import names
+
+        known = list(names())
+        rules = choice("SpanledgerRules", known if current in known else [current, *known], current)
+        apply = button("SpanledgerDecideRules", translate("Spanledger", "Combine by these"))
+        form = self._form(translate("Spanledger", "Rules of all lines"))
+        form.addRow(translate("Spanledger", "Rule set"), rules)
+        form.addRow(apply)
+
+        def decide() -> None:
+            name = rules.currentData()
+            title = translate("Spanledger", "Combined by {rules}").format(rules=name)
+            self.decided.emit(title, lambda text: decisions.decide_rules(text, name))
+
+        apply.clicked.connect(decide)
+
+    def _cases_form(self, outcome: Outcome) -> None:
+        if not outcome.model.cases:
+            return
+        natures = get_args(Nature)
+        case = _case_box("SpanledgerNatureCase", outcome)
+        nature = choice("SpanledgerNature", natures, outcome.model.cases[0].nature)
+        apply = button("SpanledgerDecideNature", translate("Spanledger", "It is of this nature"))
+        form = self._form(translate("Spanledger", "Load cases"))
+        form.addRow(translate("Spanledger", "Case"), case)
+        form.addRow(translate("Spanledger", "Nature"), nature)
+        form.addRow(apply)
+        case.currentIndexChanged.connect(
+            lambda index: nature.setCurrentIndex(natures.index(outcome.model.cases[index].nature))
+        )
+
+        def decide() -> None:
+            name, chosen = case.currentText(), nature.currentData()
+            title = translate("Spanledger", "Case {case} is {nature}").format(
+                case=name, nature=nature.currentText()
+            )
+            self.decided.emit(title, lambda text: decisions.decide_nature(text, name, chosen))
+
+        apply.clicked.connect(decide)
+
     def _support_form(
         self, mark: str, joint: int, support: Any, where: Any, units: DisplayUnits
     ) -> None:

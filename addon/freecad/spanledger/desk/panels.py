@@ -1,0 +1,148 @@
+"""The docks: the list of lines and findings on the right, the strip of one line below."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import FreeCADGui
+
+from analysis_core.units import display_units
+
+from ..present.diagrams import views_of
+from ..present.findings import finding_rows
+from ..present.listing import Row
+from ..present.strip import strip_of
+from ..qt import Qt, QtWidgets
+from ..session import Session
+from ..texts import translate
+from .findings_list import FindingsList
+from .line_desk import LineDesk
+from .line_list import LineList
+from .running import RunningBar
+
+Spot = tuple[str, int]
+
+
+class Panels:
+    """Shows sessions; decides nothing."""
+
+    def __init__(self) -> None:
+        window = FreeCADGui.getMainWindow()
+        self.running = RunningBar()
+        self.list = LineList()
+        self.findings = FindingsList()
+        self.strip = LineDesk()
+        self.tabs = QtWidgets.QTabWidget()
+        self.tabs.setObjectName("SpanledgerTabs")
+        self.tabs.addTab(self.list, translate("Spanledger", "Lines"))
+        self.tabs.addTab(self.findings, translate("Spanledger", "Findings"))
+        self.list_dock = _dock(
+            window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
+            _stacked(self.tabs, self.running), Qt.DockWidgetArea.RightDockWidgetArea,
+        )  # fmt: skip
+        self.strip_dock = _dock(
+            window, "SpanledgerStripDock", translate("Spanledger", "Line strip"), self.strip,
+            Qt.DockWidgetArea.BottomDockWidgetArea,
+        )  # fmt: skip
+        self._arranged = False
+
+    @property
+    def visible(self) -> bool:
+        """Whether a dock is shown."""
+        return self.list_dock.isVisible() or self.strip_dock.isVisible()
+
+    def appear(self) -> None:
+        """Show the docks; the first time with a size that suits the window."""
+        window = FreeCADGui.getMainWindow()
+        for dock in (self.list_dock, self.strip_dock):
+            dock.show()
+            dock.raise_()
+        if not self._arranged:
+            self._arranged = True
+            width, height = window.width(), window.height()
+            window.resizeDocks([self.list_dock], [width * 3 // 10], Qt.Orientation.Horizontal)
+            window.resizeDocks([self.strip_dock], [height * 9 // 20], Qt.Orientation.Vertical)
+
+    def disappear(self) -> None:
+        """Hide the docks."""
+        for dock in (self.list_dock, self.strip_dock):
+            dock.hide()
+
+    def show_session(self, session: Session, rows: list[Row]) -> None:
+        """Show the lines and findings of a model."""
+        self.strip.show_views(views_of(session.outcome))
+        self.list.show_rows(rows, session.units)
+        found = finding_rows(session.outcome)
+        self.findings.show_rows(found)
+        title = translate("Spanledger", "Findings ({count})").format(count=len(found))
+        self.tabs.setTabText(1, title)
+
+    def show_line(self, session: Session, line: int, spot: Spot | None) -> None:
+        """Show one line, and what is chosen of it."""
+        view = self.strip.current_view()
+        if view is None:
+            return
+        result = session.outcome.lines[line]
+        strip = strip_of(result, view, session.units, before=_before(session, result.line.mark))
+        self.strip.show_strip(strip, session.units)
+        self.show_spot(session, line, spot)
+
+    def show_spot(self, session: Session, line: int, spot: Spot | None) -> None:
+        """Show a joint, a span or an action in the inspector; None shows the line."""
+        self.strip.canvas.choose(spot)
+        view = self.strip.current_view()
+        result, outcome, units = session.outcome.lines[line], session.outcome, session.units
+        inspector = self.strip.inspector
+        kind, number = spot or ("", 0)
+        if kind == "joint" and number < len(result.line.joints):
+            inspector.show_joint(result, number, view, outcome, units)
+        elif kind == "member" and number < len(result.line.members):
+            inspector.show_member(result, number, outcome, units)
+        elif kind == "action" and number < len(result.line.actions):
+            action = result.line.actions[number]
+            shown = self.strip.canvas.strip.actions
+            words = next((a.words for a in shown if a.action is action), "")
+            inspector.show_action(result, number, words, session.text, units)
+        else:
+            inspector.show_line(result, outcome, session.settings, units)
+
+    def clear(self) -> None:
+        """Show no model."""
+        units = display_units()
+        self.list.show_rows([], units)
+        self.findings.show_rows([])
+        self.tabs.setTabText(1, translate("Spanledger", "Findings"))
+        self.strip.show_views([])
+        self.strip.show_strip(None, units)
+        self.strip.inspector.clear()
+
+
+def _before(session: Session, mark: str) -> Any:
+    if session.previous is None:
+        return None
+    return next((r for r in session.previous.lines if r.line.mark == mark), None)
+
+
+def _stacked(*widgets: Any) -> Any:
+    body = QtWidgets.QWidget()
+    layout = QtWidgets.QVBoxLayout(body)
+    layout.setContentsMargins(0, 0, 0, 0)
+    layout.setSpacing(0)
+    for widget in widgets:
+        layout.addWidget(widget)
+    return body
+
+
+def _dock(window: Any, name: str, title: str, widget: Any, area: Any) -> Any:
+    dock = QtWidgets.QDockWidget(title, window)
+    dock.setObjectName(name)
+    dock.setWidget(widget)
+    beside = [
+        other
+        for other in window.findChildren(QtWidgets.QDockWidget)
+        if other is not dock and other.isVisible() and window.dockWidgetArea(other) == area
+    ]
+    window.addDockWidget(area, dock)
+    if beside:  # FreeCAD's own panels there stay one click away
+        window.tabifyDockWidget(beside[0], dock)
+    return dock

@@ -1,0 +1,81 @@
+"""The 3D view of the open models: lines, diagrams, and the building behind them."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import FreeCAD
+import FreeCADGui
+
+from .. import document
+from ..present.diagrams import View, ordinates_of
+from ..present.scene import Scene
+from ..qt import QtCore
+from ..session import Session
+from ..texts import translate
+
+
+class Picture:
+    """Keeps the document objects in step with the sessions."""
+
+    def __init__(self) -> None:
+        self.building_shown = True
+        self._scenes: dict[str, Scene] = {}
+
+    def show(self, name: str, session: Session, states: list[str]) -> None:
+        """Draw the lines of a model into its document, in one step where it is the first."""
+        doc = FreeCAD.getDocument(name)
+        obj = document.find_beam_lines(doc)
+        if obj is not None:
+            self._scenes[name] = document.show_outcome(obj, session.outcome, states)
+            return
+        doc.openTransaction(translate("Spanledger", "Beam lines"))
+        try:
+            obj = _add_object(doc, session)
+            self._scenes[name] = document.show_outcome(obj, session.outcome, states)
+        except Exception:
+            doc.abortTransaction()
+            raise
+        doc.commitTransaction()
+        _look_at_all(doc)
+
+    def show_diagram(self, name: str, session: Session, view: View, quantity: str) -> None:
+        """Draw a quantity along all lines."""
+        obj = document.find_beam_lines(FreeCAD.getDocument(name))
+        if obj is not None and name in self._scenes:
+            ordinates = ordinates_of(session.outcome.lines, view, quantity)
+            document.show_diagram(obj, self._scenes[name], ordinates)
+
+    def show_states(self, name: str, states: list[str]) -> None:
+        """Write down the states of the lines."""
+        obj = document.find_beam_lines(FreeCAD.getDocument(name))
+        if obj is not None:
+            obj.States = states
+
+    def show_building(self, name: str, session: Session) -> None:
+        """Draw the building faintly, or not where it is switched off."""
+        obj = document.find_beam_lines(FreeCAD.getDocument(name))
+        if obj is not None:
+            obj.ViewObject.Proxy.show_building(session.shape if self.building_shown else None)
+
+    def forget(self, name: str) -> None:
+        """A document was closed."""
+        self._scenes.pop(name, None)
+
+
+def _add_object(doc: Any, session: Session) -> Any:
+    from ..draw.view import BeamLinesView
+
+    obj = document.add_beam_lines(doc)
+    obj.IfcFile, obj.JobFile = str(session.path), str(session.job_path)
+    BeamLinesView(obj.ViewObject)
+    obj.ViewObject.DisplayMode = obj.ViewObject.Proxy.getDefaultDisplayMode()
+    return obj
+
+
+def _look_at_all(doc: Any) -> None:
+    gui = FreeCADGui.getDocument(doc.Name)
+    view = gui.activeView() if gui else None
+    if view is not None and hasattr(view, "viewIsometric"):
+        view.viewIsometric()
+        QtCore.QTimer.singleShot(0, view.fitAll)  # once the docks have taken their room

@@ -1,0 +1,76 @@
+"""What runs off the interface thread: one piece of work in front, one behind everything else."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Any
+
+import FreeCAD
+
+from ..qt import QtCore
+from ..texts import translate
+from ..worker import Work
+from .running import RunningBar
+
+
+class Runs(QtCore.QObject):
+    """At most one work in front, with progress and a button to stop it."""
+
+    def __init__(self, bar: RunningBar, tell: Callable[[str], None]) -> None:
+        super().__init__()
+        self._bar, self._tell = bar, tell
+        self._front: Work | None = None
+        self._behind: Work | None = None
+        bar.cancel_asked.connect(self.cancel)
+
+    @property
+    def busy(self) -> bool:
+        """Whether something runs in front."""
+        return self._front is not None
+
+    @property
+    def busy_behind(self) -> bool:
+        """Whether something runs behind."""
+        return self._behind is not None and self._behind.isRunning()
+
+    def start(self, task: Callable[..., Any], done: Callable[[Any], None]) -> None:
+        """Run ``task(progress)``; its result goes to ``done`` in the window's thread."""
+        if self.busy:
+            self._tell(translate("Spanledger", "Something is still running; wait, or stop it."))
+            return
+        work = Work(task, self)
+        work.progressed.connect(self._bar.show_progress)
+        work.succeeded.connect(done)
+        work.failed.connect(self._tell)
+        work.cancelled.connect(
+            lambda: self._tell(translate("Spanledger", "Stopped; nothing was changed."))
+        )
+        work.finished.connect(self._finished)
+        self._front = work
+        self._bar.begin()
+        work.start()
+
+    def start_behind(self, task: Callable[..., Any], done: Callable[[Any], None]) -> None:
+        """Run something that nobody waits for; a failure is only logged."""
+        self.cancel_behind()
+        work = Work(task, self)
+        work.succeeded.connect(done)
+        work.failed.connect(lambda message: FreeCAD.Console.PrintLog(message + "\n"))
+        self._behind = work
+        work.start()
+
+    def cancel(self) -> None:
+        """Stop what runs in front at its next step."""
+        if self._front is not None:
+            self._front.cancel()
+
+    def cancel_behind(self) -> None:
+        """Stop what runs behind at its next step."""
+        if self._behind is not None:
+            self._behind.cancel()
+
+    def _finished(self) -> None:
+        self._bar.end()
+        if self._front is not None:
+            self._front.deleteLater()
+        self._front = None
