@@ -13,11 +13,11 @@ from analysis_core.errors import ModelError
 from analysis_core.model import (
     FREE,
     RIGID,
-    Action,
     JointForce,
     JointMovement,
     Line,
     Member,
+    MemberAction,
 )
 from analysis_core.stiffness_check.influence import Rows, rotations_and_forces
 from analysis_core.stiffness_check.integrals import (
@@ -73,20 +73,21 @@ def gather(lines: Sequence[Line], cases: Sequence[Sequence[str]]) -> Arrays:
     right, up = x[end] - x[start], z[end] - z[start]
     length = np.array([_length(member) for member in every])
     distance = np.hypot(right, up)
-    loads = _Loads(lines, cases)
-    turned, across, along = loads.on_members(every, length)
-    shape = (count, members, 2, loads.cases)
+    bending, shear = _softness(every)
+    loads = _Loads(lines, cases, every, np.isnan(bending))
+    turned, across, along = loads.on_members(length, bending, shear)
+    shape = (count, members, 2, len(cases[0]))
     return Arrays(
         length=length.reshape(count, members),
         cosine=(right / distance).reshape(count, members),
         sine=(up / distance).reshape(count, members),
-        flexibility=_flexibilities(every, length).reshape(count, members, 3),
+        flexibility=_flexibilities(every, length, bending, shear).reshape(count, members, 3),
         springs=_spring_flexibilities(every).reshape(count, members, 2),
         turned=turned.reshape(shape),
         across=across.reshape(shape),
         along=along.reshape(shape),
-        forces=loads.forces.reshape(count, joints, 3, loads.cases),
-        moved=loads.moved.reshape(count, joints, 3, loads.cases),
+        forces=loads.forces.reshape(count, joints, 3, len(cases[0])),
+        moved=loads.moved.reshape(count, joints, 3, len(cases[0])),
         supports=_supports(lines).reshape(count, joints, 3),
     )
 
@@ -96,16 +97,9 @@ def _length(member: Member) -> float:
     return pieces[0].length if len(pieces) == 1 else math.fsum(p.length for p in pieces)
 
 
-def uniform(member: Member) -> bool:
-    """Whether bending and shear rigidity do not vary along the member."""
-    if len(member.pieces) != 1:
-        return False
-    piece = member.pieces[0]
-    return not any(piece.flexural[1:]) and not (piece.shear and any(piece.shear[1:]))
-
-
-def _flexibilities(members: Sequence[Member], length: Floats) -> Floats:
-    bending, shear = _softness(members)
+def _flexibilities(
+    members: Sequence[Member], length: Floats, bending: Floats, shear: Floats
+) -> Floats:
     found = np.empty((len(members), 3))
     found[:, 0] = found[:, 2] = length * bending / 3.0 + shear / length
     found[:, 1] = -length * bending / 6.0 + shear / length
@@ -118,13 +112,14 @@ def _softness(members: Sequence[Member]) -> tuple[Floats, Floats]:
     """Return 1/EI and 1/GA of each member, NaN where they vary."""
     bending, shear = [], []
     for member in members:
-        piece = member.pieces[0]
-        if uniform(member):
-            bending.append(1.0 / piece.flexural[0] ** piece.power)
-            shear.append(1.0 / piece.shear[0] if piece.shear else 0.0)
-        else:
+        pieces = member.pieces
+        piece = pieces[0]
+        if len(pieces) > 1 or any(piece.flexural[1:]) or any((piece.shear or ())[1:]):
             bending.append(math.nan)
             shear.append(0.0)
+        else:
+            bending.append(piece.flexural[0] ** -piece.power)
+            shear.append(1.0 / piece.shear[0] if piece.shear else 0.0)
     return np.array(bending), np.array(shear)
 
 
@@ -145,53 +140,62 @@ def _supports(lines: Sequence[Line]) -> Floats:
 
 
 class _Loads:
-    """The actions of all lines, sorted by kind; slot = place in the flat arrays."""
+    """The actions of all lines; ``varying`` marks members whose rigidity varies."""
 
-    def __init__(self, lines: Sequence[Line], cases: Sequence[Sequence[str]]) -> None:
-        self.cases = len(cases[0])
-        members, joints = len(lines[0].members), len(lines[0].joints)
-        self.forces = np.zeros((len(lines) * joints, 3, self.cases))
+    def __init__(
+        self,
+        lines: Sequence[Line],
+        cases: Sequence[Sequence[str]],
+        members: Sequence[Member],
+        varying: NDArray[np.bool_],
+    ) -> None:
+        self._cases = len(cases[0])
+        joints = len(lines[0].joints)
+        self.forces = np.zeros((len(lines) * joints, 3, self._cases))
         self.moved = np.zeros_like(self.forces)
-        self._on_members: list[tuple[int, int, Action]] = []
+        self._rows = Rows(len(members) * self._cases)
+        self._turned = np.zeros((len(members) * self._cases, 2))
+        self._members, self._varying = members, varying.tolist()
         columns: dict[tuple[str, ...], dict[str, int]] = {}
         for place, (line, names) in enumerate(zip(lines, cases, strict=True)):
             key = tuple(names)
             column = columns.get(key)
             if column is None:
                 column = columns[key] = {name: i for i, name in enumerate(key)}
-            first_member, first_joint = place * members, place * joints
-            for action in line.actions:
-                case = column.get(action.case)
-                if case is None:
-                    continue
-                if isinstance(action, JointForce):
-                    acting = (action.horizontal, action.vertical, action.moment)
-                    self.forces[first_joint + action.joint, :, case] += acting
-                elif isinstance(action, JointMovement):
-                    _check_imposed(line, action)
-                    imposed = (action.horizontal, action.vertical, action.rotation)
-                    self.moved[first_joint + action.joint, :, case] += imposed
-                else:
-                    self._on_members.append((first_member + action.member, case, action))
+            self._take(line, column, place * len(line.members), place * joints)
+
+    def _take(
+        self, line: Line, column: dict[str, int], first_member: int, first_joint: int
+    ) -> None:
+        for action in line.actions:
+            case = column.get(action.case)
+            if case is None:
+                continue
+            if isinstance(action, JointForce):
+                acting = (action.horizontal, action.vertical, action.moment)
+                self.forces[first_joint + action.joint, :, case] += acting
+            elif isinstance(action, JointMovement):
+                _check_imposed(line, action)
+                imposed = (action.horizontal, action.vertical, action.rotation)
+                self.moved[first_joint + action.joint, :, case] += imposed
+            else:
+                self._on_member(first_member + action.member, case, action)
+
+    def _on_member(self, index: int, case: int, action: MemberAction) -> None:
+        slot = index * self._cases + case
+        self._rows.add(slot, index, action)
+        if self._varying[index]:
+            self._turned[slot] += loaded_rotations(self._members[index].pieces, action)
 
     def on_members(
-        self, members: Sequence[Member], length: Floats
+        self, length: Floats, bending: Floats, shear: Floats
     ) -> tuple[Floats, Floats, Floats]:
         """Return turned, across and along, (N, 2, C) each, of all N members."""
-        count = len(members)
-        bending, shear = _softness(members)
-        rows = Rows(count * self.cases)
-        turned = np.zeros((count * self.cases, 2))
-        varying = np.isnan(bending)
-        for index, case, action in self._on_members:
-            slot = index * self.cases + case
-            rows.add(slot, index, action)
-            if varying[index]:
-                turned[slot] += loaded_rotations(members[index].pieces, action)  # type: ignore[arg-type]
-        found = rotations_and_forces(rows, length, np.where(varying, 0.0, bending), shear)
+        uniform_ones = np.where(np.isnan(bending), 0.0, bending)
+        found = rotations_and_forces(self._rows, length, uniform_ones, shear)
         turned, across, along = (
-            values.reshape(count, self.cases, 2).transpose(0, 2, 1)
-            for values in (turned + found.turned, found.across, found.along)
+            values.reshape(len(length), self._cases, 2).transpose(0, 2, 1)
+            for values in (self._turned + found.turned, found.across, found.along)
         )
         return turned, across, along
 

@@ -21,7 +21,7 @@ from analysis_core.stiffness_check.equations import Equations
 Floats = NDArray[np.float64]
 Index = NDArray[np.intp]
 
-_GIVING_WAY = 1e-9
+_GIVING_WAY = 1e-10
 """How much an axial row gives way in the factored matrix, all entries being about 1."""
 _DENSE = 300
 """Largest number of unknowns that is always solved as a full matrix."""
@@ -143,7 +143,8 @@ def _scaled(system: Equations) -> tuple[Equations, Floats]:
     """
     order = np.lexsort((system.column, system.row))
     row, column, entries = system.row[order], system.column[order], system.entries[:, order]
-    factor = np.ones((len(entries), system.size))
+    factor = np.exp2(np.round(np.log2(system.units)))
+    entries = entries * factor[:, row] * factor[:, column]
     if not system.size:
         return replace(system, row=row, column=column, entries=entries), factor
     starts = np.searchsorted(row, np.arange(system.size))

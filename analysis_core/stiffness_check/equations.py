@@ -35,7 +35,8 @@ class Equations:
     """Sparse symmetric matrices of B lines with the same places, and C right-hand sides.
 
     row, column (T,); entries (B, T), each place at most once; right (B, N, C).  Rows ``axial``
-    say that members keep their length, ``lengths`` (B, A) in m.
+    say that members keep their length, ``lengths`` (B, A) in m.  ``units`` (B, N) are sizes of
+    the unknowns that make flexibilities about 1.
     """
 
     size: int
@@ -45,6 +46,7 @@ class Equations:
     right: Floats
     axial: Index
     lengths: Floats
+    units: Floats
 
 
 def equations(pattern: Pattern, numbers: Numbering, arrays: Arrays) -> Equations:
@@ -64,7 +66,17 @@ def equations(pattern: Pattern, numbers: Numbering, arrays: Arrays) -> Equations
         build.right,
         numbers.axial[keeping],
         arrays.length[:, keeping],
+        _units(numbers, arrays),
     )
+
+
+def _units(numbers: Numbering, arrays: Arrays) -> Floats:
+    """Forces in terms of movements: the mean flexibility of the members decides."""
+    size = np.sqrt(arrays.flexibility[:, :, [0, 2]].mean((1, 2)))[:, None]
+    units = np.repeat(1.0 / size, numbers.size, axis=1)
+    moves = numbers.movement[numbers.movement >= 0]
+    units[:, moves] = size
+    return units
 
 
 def prescribed(pattern: Pattern, arrays: Arrays) -> tuple[Floats, Floats]:

@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import lru_cache
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -25,31 +26,53 @@ Floats = NDArray[np.float64]
 
 
 class Rows:
-    """Actions sorted by kind: ``slot`` is where the effect goes, ``index`` the member."""
+    """Actions sorted by kind, in flat lists of numbers: quick to fill, quick to turn into arrays.
+
+    ``slot`` is where the effect of an action goes, ``index`` the member it acts on.
+    """
 
     def __init__(self, slots: int) -> None:
         self.slots = slots
-        self.forces: list[tuple[int, int, float, float, float]] = []
-        self.couples: list[tuple[int, int, float, float]] = []
-        self.curvatures: list[tuple[int, int, float, float, float]] = []
-        self.spreads: list[tuple[int, int, float, float]] = []
-        self.across: list[tuple[float, ...]] = []
-        self.along: list[tuple[float, ...]] = []
+        self.forces: list[float] = []
+        self.couples: list[float] = []
+        self.curvatures: list[float] = []
+        self.spreads: list[float] = []
+        self.across = Coefficients()
+        self.along = Coefficients()
 
     def add(self, slot: int, index: int, action: Action) -> None:
         """Note one action on a member."""
         if isinstance(action, DistributedForce):
-            self.spreads.append((slot, index, action.start, action.end))
-            self.across.append(action.transverse)
-            self.along.append(action.axial)
+            self.spreads += (slot, index, action.start, action.end)
+            self.across.add(action.transverse)
+            self.along.add(action.axial)
         elif isinstance(action, PointForce):
-            row = (slot, index, action.position, action.transverse, action.axial)
-            self.forces.append(row)
+            self.forces += (slot, index, action.position, action.transverse, action.axial)
         elif isinstance(action, PointMoment):
-            self.couples.append((slot, index, action.position, action.moment))
+            self.couples += (slot, index, action.position, action.moment)
         elif isinstance(action, ImposedCurvature):
-            row = (slot, index, action.start, action.end, action.curvature)
-            self.curvatures.append(row)
+            self.curvatures += (slot, index, action.start, action.end, action.curvature)
+
+
+class Coefficients:
+    """Polynomials of different degrees."""
+
+    def __init__(self) -> None:
+        self._values: list[float] = []
+        self._widths: list[int] = []
+
+    def add(self, coefficients: tuple[float, ...]) -> None:
+        """Note one polynomial, the constant first."""
+        self._values += coefficients
+        self._widths.append(len(coefficients))
+
+    def table(self) -> Floats:
+        """Return (N, D) with zeros behind the shorter ones; at least one column."""
+        widths = np.array(self._widths)
+        filled = np.arange(max(1, int(widths.max(initial=0)))) < widths[:, None]
+        table = np.zeros(filled.shape)
+        table[filled] = self._values
+        return table
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -82,9 +105,9 @@ def gauss_points(count: int) -> tuple[Floats, Floats]:
 def _add_spreads(sums: Sums, rows: Rows, length: Floats, bending: Floats) -> None:
     if not rows.spreads:
         return
-    slot, index, start, end = _columns(rows.spreads)
+    slot, index, start, end = _columns(rows.spreads, 4)
     span, reach = length[index], end - start
-    across, along = _padded(rows.across), _padded(rows.along)
+    across, along = rows.across.table(), rows.along.table()
     # The cubic times a polynomial of degree d is exact with (d + 5) // 2 points.
     nodes, weights = gauss_points((across.shape[1] + 4) // 2)
     v = reach[:, None] * (nodes + 1.0) / 2.0
@@ -104,7 +127,7 @@ def _add_spreads(sums: Sums, rows: Rows, length: Floats, bending: Floats) -> Non
 def _add_forces(sums: Sums, rows: Rows, length: Floats, bending: Floats) -> None:
     if not rows.forces:
         return
-    slot, index, x, force, axial = _columns(rows.forces)
+    slot, index, x, force, axial = _columns(rows.forces, 5)
     span = length[index]
     near, far = _deflections(x, span)
     work = force * bending[index]
@@ -116,7 +139,7 @@ def _add_forces(sums: Sums, rows: Rows, length: Floats, bending: Floats) -> None
 def _add_couples(sums: Sums, rows: Rows, length: Floats, bending: Floats, shear: Floats) -> None:
     if not rows.couples:
         return
-    slot, index, x, couple = _columns(rows.couples)
+    slot, index, x, couple = _columns(rows.couples, 4)
     span = length[index]
     soft, sliding = bending[index] / (6.0 * span), shear[index] / span
     near = (2.0 * span**2 - 6.0 * span * x + 3.0 * x**2) * soft + sliding
@@ -128,7 +151,7 @@ def _add_couples(sums: Sums, rows: Rows, length: Floats, bending: Floats, shear:
 def _add_curvatures(sums: Sums, rows: Rows, length: Floats, bending: Floats) -> None:
     if not rows.curvatures:
         return
-    slot, index, start, end, curvature = _columns(rows.curvatures)
+    slot, index, start, end, curvature = _columns(rows.curvatures, 5)
     # Members of varying rigidity (bending 0 here) have their rotations from elsewhere.
     here = np.where(bending[index] > 0.0, curvature, 0.0)
     far = -here * (end - start) * (end + start) / (2.0 * length[index])
@@ -141,18 +164,10 @@ def _deflections(x: Floats, span: Floats) -> tuple[Floats, Floats]:
     return both * (2.0 * span - x), -both * (span + x)
 
 
-def _columns(rows: list[tuple]) -> tuple:  # type: ignore[type-arg]
-    table = np.array(rows)
+def _columns(numbers: list[float], width: int) -> tuple[Any, ...]:
+    table = np.array(numbers).reshape(-1, width)
     slot, index = table[:, 0].astype(np.intp), table[:, 1].astype(np.intp)
     return (slot, index, *table.T[2:])
-
-
-def _padded(rows: list[tuple[float, ...]]) -> Floats:
-    width = max(1, *(len(row) for row in rows))
-    padded = np.zeros((len(rows), width))
-    for place, row in enumerate(rows):
-        padded[place, : len(row)] = row
-    return padded
 
 
 def _polynomial(coefficients: Floats, v: Floats) -> Floats:

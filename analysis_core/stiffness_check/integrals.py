@@ -110,8 +110,9 @@ def _breaks(action: MemberAction) -> tuple[float, ...]:
     return (action.start, action.end)
 
 
+@lru_cache(maxsize=1024)
 def _points(
-    pieces: Sequence[Piece], breaks: Sequence[float]
+    pieces: tuple[Piece, ...], breaks: tuple[float, ...]
 ) -> tuple[Floats, Floats, Floats, Floats]:
     """Return points x, weights (m), 1/EI and 1/GA there; no panel spans a break."""
     parts = []

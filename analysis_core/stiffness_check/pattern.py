@@ -197,7 +197,8 @@ def _touched(pattern: Pattern) -> set[tuple[int, int]]:
 
 def _slipping(pattern: Pattern) -> set[int]:
     """Return the joints where nothing but slipping legs meets."""
-    legs, others = set(), set()
+    legs: set[int] = set()
+    others: set[int] = set()
     for ends, slip in zip(pattern.ends, pattern.slips, strict=True):
         (others if slip == NO_SLIP else legs).update(ends)
     return legs - others
