@@ -31,6 +31,7 @@ MODEL = "analysis model"
 # Readers commonly keep instance numbers in 32 signed bits.
 _LARGEST_NUMBER = 2**31 - 1
 _ROOM = 2**26
+_NUMBERS = re.compile(rb"(?:^|[\r\n])#(\d+)=")
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,7 +53,7 @@ class Lines:
     """
 
     def __init__(self, first: int) -> None:
-        self.next = first
+        self.first = self.next = first
         self._lines: list[str] = []
         self._shared: dict[str, int] = {}
 
@@ -74,6 +75,11 @@ class Lines:
         """Return references to instances with these texts."""
         return references(map(self.shared, bodies))
 
+    def body(self, number: int) -> str:
+        """Return the text of an instance added here."""
+        line = self._lines[number - self.first]
+        return line[line.index("=") + 1 : -1]
+
     def __len__(self) -> int:
         return len(self._lines)
 
@@ -85,28 +91,36 @@ class Lines:
         return (end.join(self._lines) + end).encode("ascii")
 
 
-def first_free(index: StepIndex) -> int:
-    """Return the number after which ours may count: the largest of the file, or a wide gap.
+def first_free(index: StepIndex, kept: bytes = b"") -> int:
+    """Return the number from which ours may count: after all of the file, or in a wide gap.
 
-    Numbers of some files reach the limit of 32 bits; then the widest gap below is taken.
+    ``kept`` are lines that stay in our block.  Numbers of some files reach the limit of 32 bits;
+    then the widest gap below is taken.
     """
-    largest = index.largest_id
+    own = [int(n) for n in _NUMBERS.findall(kept)]
+    largest = max([index.largest_id, *own])
     if largest < _LARGEST_NUMBER - _ROOM:
         return largest + 1
-    taken = sorted({0, *index.ids.tolist(), _LARGEST_NUMBER})
+    taken = sorted({0, *index.numbers, *own, _LARGEST_NUMBER})
     below = [n for n in taken if n <= _LARGEST_NUMBER]
     gaps = [(high - low, low) for low, high in pairwise(below)]
-    return max(gaps)[1] + 1
+    widest: int = max(gaps)[1]
+    return widest + 1
 
 
-def with_block(
-    base: bytes, position: int, lines: bytes, kind: str, newline: bytes
-) -> list[bytes | memoryview]:
-    """Return the file, in parts, with a block of ``lines`` at ``position`` of ``base``."""
-    begin = f"/* Spanledger {kind} begin {_digest(base)} */".encode() + newline
-    end = f"/* Spanledger {kind} end {_digest(lines)} */".encode() + newline
-    view = memoryview(base)
-    return [view[:position], begin, lines, end, view[position:]]
+def with_block(index: StepIndex, lines: bytes, kind: str) -> list[bytes | memoryview]:
+    """Return the file, in parts, with a block of ``lines`` before the end of its data.
+
+    Without marks where the file opens a comment and never closes it: ours would.
+    """
+    assert index.data_end is not None  # the caller has seen to it
+    view = memoryview(index.data)
+    before, after = view[: index.data_end], view[index.data_end :]
+    if index.stray:
+        return [before, lines, after]
+    begin = f"/* Spanledger {kind} begin {_digest(index.data)} */".encode() + index.newline
+    end = f"/* Spanledger {kind} end {_digest(lines)} */".encode() + index.newline
+    return [before, begin, lines, end, after]
 
 
 def cut_block(data: bytes, kind: str) -> Cut | None:
@@ -114,18 +128,24 @@ def cut_block(data: bytes, kind: str) -> Cut | None:
 
     The marks are looked for from the end of the file, where they stand.
     """
-    begin = re.compile(
-        rb"/\* Spanledger " + kind.encode() + rb" begin ([0-9a-f]{64}) \*/(\r\n?|\n)"
-    )
-    end = re.compile(rb"/\* Spanledger " + kind.encode() + rb" end ([0-9a-f]{64}) \*/(\r\n?|\n)?")
-    opening = _last_match(data, begin, f"/* Spanledger {kind} begin ".encode())
-    closing = _last_match(data, end, f"/* Spanledger {kind} end ".encode())
+    opening = _last_mark(data, f"/* Spanledger {kind} begin ")
+    closing = _last_mark(data, f"/* Spanledger {kind} end ")
     if opening is None or closing is None or closing.start() < opening.end():
         return None
     base = data[: opening.start()] + data[closing.end() :]
     block = data[opening.end() : closing.start()]
     intact = opening[1] == _digest(base).encode() and closing[1] == _digest(block).encode()
     return Cut(base, block, intact)
+
+
+def mark_spans(
+    data: bytes, comments: Iterable[tuple[int, int]], kind: str
+) -> list[tuple[int, int]]:
+    """Return where the marks of a kind of block stand among the comments, line ends included."""
+    mark = rb"/\* Spanledger " + kind.encode() + rb" (?:begin|end) [0-9a-f]{64} \*/(?:\r\n?|\n)?"
+    pattern = re.compile(mark)
+    found = (pattern.match(data, start) for start, _ in comments)
+    return [match.span() for match in found if match]
 
 
 def _last_mark(data: bytes, start: str) -> re.Match[bytes] | None:

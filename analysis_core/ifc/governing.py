@@ -71,6 +71,11 @@ class ElementEffects:
         return tuple({id(part.result): part.result for part in self.parts}.values())
 
     @property
+    def marks(self) -> str:
+        """The marks of these lines."""
+        return ", ".join(dict.fromkeys(result.line.mark for result in self.results))
+
+    @property
     def finite(self) -> bool:
         """Whether every value is a number that can be written."""
         extremes = (self.sagging, self.hogging, self.shear, self.deflection)

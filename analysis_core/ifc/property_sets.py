@@ -61,8 +61,7 @@ class SetMaker:
     def effects(self, found: ElementEffects) -> PropertySet:
         """Return Spanledger_Effects."""
         m = self.measures
-        marks = ", ".join(dict.fromkeys(result.line.mark for result in found.results))
-        properties = [_text("LineMark", "IFCLABEL", marks)]
+        properties = [_text("LineMark", "IFCLABEL", found.marks)]
         for name, extreme, measure in (
             ("SaggingMoment", found.sagging, m.torque),
             ("HoggingMoment", found.hogging, m.torque),

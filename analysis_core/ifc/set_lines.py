@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 
 import ifcopenshell.ifcopenshell_wrapper as parser
 
@@ -16,27 +16,31 @@ from analysis_core.ifc.step_values import string
 PARSER_SCHEMAS = {"IFC4X3": "IFC4X3_ADD2"}
 
 
+def set_name(made: PropertySet) -> str:
+    """Return what the GlobalIds of a set and of its relation follow from."""
+    return f"{made.element}/{made.name}"
+
+
 def write_sets(
-    sets: Sequence[PropertySet], index: StepIndex, lines: Lines, owner: str
-) -> list[Finding]:
-    """Add the sets to ``lines``.  An element that the file does not hold becomes a finding."""
-    elements, findings = find_elements(dict.fromkeys(s.element for s in sets), index)
-    names = [f"{s.element}/{s.name}" for s in sets]
+    sets: Sequence[PropertySet], elements: Mapping[str, int], lines: Lines, owner: str
+) -> list[str]:
+    """Add the sets to ``lines``; return their GlobalIds.  ``elements``: instances by GlobalId."""
+    names = [set_name(made) for made in sets]
     set_ids = global_ids(names)
     relation_ids = global_ids(f"{name}/relation" for name in names)
-    titles = {s.name: string(s.name) for s in sets}
+    titles = {made.name: string(made.name) for made in sets}
     for made, set_id, relation_id in zip(sets, set_ids, relation_ids, strict=True):
-        element = elements.get(made.element)
-        if element is None:
-            continue
         properties = lines.shared_list(made.properties)
         number = lines.add(f"IFCPROPERTYSET('{set_id}',{owner},{titles[made.name]},$,{properties})")
-        lines.add(f"IFCRELDEFINESBYPROPERTIES('{relation_id}',{owner},$,$,(#{element}),#{number})")
-    return findings
+        lines.add(
+            f"IFCRELDEFINESBYPROPERTIES('{relation_id}',{owner},$,$,"
+            f"(#{elements[made.element]}),#{number})"
+        )
+    return set_ids
 
 
 def find_elements(
-    global_ids_wanted: dict[str, None], index: StepIndex
+    global_ids_wanted: Mapping[str, object], index: StepIndex
 ) -> tuple[dict[str, int], list[Finding]]:
     """Return the instance of each element by GlobalId, and findings on those that are not there.
 

@@ -44,18 +44,32 @@ class StepIndex:
         self.stray = bool(blanked.stray)
         self.open_string = blanked.open >= 0
         self._buffer: Bytes = np.frombuffer(self.code, dtype=np.uint8)
-        equals = np.flatnonzero(self._buffer == ord("="))
-        ids, starts, equals = _instances(self._buffer, equals)
+        hashes = np.flatnonzero(self._buffer == ord("#"))
+        numbers, after = _numbers(self._buffer, hashes)
+        named = numbers >= 0
+        hashes, numbers, after = hashes[named], numbers[named], after[named]
+        defining = self._buffer[np.minimum(after, self._buffer.size - 1)] == ord("=")
         semicolons = np.flatnonzero(self._buffer == ord(";"))
-        at = np.searchsorted(semicolons, equals)
+        at = np.searchsorted(semicolons, after[defining])
         whole = at < semicolons.size
-        self.ids, self.starts, self.equals = ids[whole], starts[whole], equals[whole]
+        self.ids: Positions = numbers[defining][whole]
+        self.starts: Positions = hashes[defining][whole]
+        self.equals: Positions = after[defining][whole]
         self.ends: Positions = semicolons[at[whole]] + 1
+        self._mentions = hashes[~defining], numbers[~defining]
 
     @property
     def largest_id(self) -> int:
-        """Largest instance number, 0 where there is none."""
-        return int(self.ids.max(initial=0))
+        """Largest number given to an instance or referred to, 0 where there is none.
+
+        Some files refer to instances that they do not hold; these numbers stay free.
+        """
+        return max(int(self.ids.max(initial=0)), int(self._mentions[1].max(initial=0)))
+
+    @property
+    def numbers(self) -> set[int]:
+        """All numbers given to instances or referred to."""
+        return {*self.ids.tolist(), *self._mentions[1].tolist()}
 
     @cached_property
     def end_of_file(self) -> int | None:
@@ -167,20 +181,24 @@ class StepIndex:
         """Return the numbers that an instance refers to."""
         row = self.row(instance)
         code = self.code[int(self.equals[row]) + 1 : int(self.ends[row])]
-        return [int(n) for n in re.findall(rb"#(\d+)", code)]
+        return [int(n) for n in re.findall(rb"#\s*(\d+)", code)]
+
+    @cached_property
+    def _links(self) -> tuple[Positions, Positions]:
+        """Of every reference in an instance: the number referred to, and the one that refers."""
+        places, numbers = self._mentions
+        rows = np.searchsorted(self.equals, places) - 1
+        inside = (rows >= 0) & (places < self.ends[rows])
+        return numbers[inside], self.ids[rows[inside]]
 
     def referrers(self, wanted: Iterable[int]) -> dict[int, set[int]]:
         """Return, for each wanted number, the numbers of the instances that refer to it."""
-        hashes = np.flatnonzero(self._buffer == ord("#"))
-        numbers = _numbers_from(self._buffer, hashes + 1)
+        numbers, referrers = self._links
         hit = np.isin(numbers, np.array(sorted(wanted), dtype=np.int64))
-        hashes, numbers = hashes[hit], numbers[hit]
-        rows = np.searchsorted(self.equals, hashes) - 1
-        inside = (rows >= 0) & (hashes < self.ends[rows])
         result: dict[int, set[int]] = {}
-        pairs = zip(numbers[inside].tolist(), self.ids[rows[inside]].tolist(), strict=True)
-        for number, referrer in pairs:
-            result.setdefault(number, set()).add(referrer)
+        for number, referrer in zip(numbers[hit].tolist(), referrers[hit].tolist(), strict=True):
+            if referrer != number:
+                result.setdefault(number, set()).add(referrer)
         return result
 
     def _places(self, keyword: str) -> Iterable[int]:
@@ -268,50 +286,30 @@ def _last(code: bytes, pattern: bytes, end: int) -> int | None:
     return None
 
 
-def _instances(buffer: Bytes, equals: Positions) -> tuple[Positions, Positions, Positions]:
-    """Return number, position of # and of = for each = that follows ``#digits``."""
-    at = _walk_back(buffer, equals - 1, _is_blank)
-    last_digit = at
-    at = _walk_back(buffer, at, _is_digit)
-    first_digit = at + 1
-    at = _walk_back(buffer, at, _is_blank)
-    fits = (at >= 0) & (buffer[np.maximum(at, 0)] == ord("#")) & (first_digit <= last_digit)
-    return _numbers_from(buffer, first_digit[fits]), at[fits], equals[fits]
-
-
-def _walk_back(buffer: Bytes, at: Positions, passes: Callable[[Bytes], NDArray[np.bool_]]
-) -> Positions:  # fmt: skip
-    """Move every position back while the byte there passes."""
-    at = at.copy()
-    moving = np.flatnonzero(at >= 0)
-    while moving.size:
-        moving = moving[passes(buffer[at[moving]])]
-        at[moving] -= 1
-        moving = moving[at[moving] >= 0]
-    return at
-
-
-def _numbers_from(buffer: Bytes, first: Positions) -> Positions:
-    """Return the number that begins at each position, -1 where no digit stands there."""
-    numbers = np.zeros(first.size, dtype=np.int64)
-    at = first.copy()
+def _numbers(buffer: Bytes, hashes: Positions) -> tuple[Positions, Positions]:
+    """Return the number after each #, -1 where there is none, and where the next token begins."""
+    numbers = np.zeros(hashes.size, dtype=np.int64)
+    at = _skip_blanks(buffer, hashes + 1)
+    first = at.copy()
     moving = np.flatnonzero(at < buffer.size)
     while moving.size:
         values = buffer[at[moving]]
-        digit = _is_digit(values)
+        digit = (values >= ord("0")) & (values <= ord("9"))
         moving = moving[digit]
         numbers[moving] = numbers[moving] * 10 + (values[digit] - np.uint8(ord("0")))
         at[moving] += 1
         moving = moving[at[moving] < buffer.size]
     numbers[at == first] = -1
-    return numbers
+    return numbers, _skip_blanks(buffer, at)
 
 
-def _is_digit(values: Bytes) -> NDArray[np.bool_]:
-    digit: NDArray[np.bool_] = (values >= ord("0")) & (values <= ord("9"))
-    return digit
-
-
-def _is_blank(values: Bytes) -> NDArray[np.bool_]:
-    blank: NDArray[np.bool_] = (values == 32) | ((values >= 9) & (values <= 13))
-    return blank
+def _skip_blanks(buffer: Bytes, at: Positions) -> Positions:
+    """Move each position on to the next byte that is not blank."""
+    at = at.copy()
+    moving = np.flatnonzero(at < buffer.size)
+    while moving.size:
+        values = buffer[at[moving]]
+        moving = moving[(values == 32) | ((values >= 9) & (values <= 13))]
+        at[moving] += 1
+        moving = moving[at[moving] < buffer.size]
+    return at

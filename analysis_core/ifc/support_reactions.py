@@ -38,6 +38,12 @@ class SupportReactions:
         return math.fsum(b[0] for b in found.values()), math.fsum(b[1] for b in found.values())
 
     @property
+    def lines(self) -> set[str]:
+        """Marks of the lines that bear on the element."""
+        marks = {mark for found in self.bounds.values() for mark in found}
+        return marks | {mark for mark, _ in self.cases}
+
+    @property
     def finite(self) -> bool:
         """Whether every value is a number that can be written."""
         numbers = [*self.cases.values()]

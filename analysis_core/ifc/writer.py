@@ -2,29 +2,42 @@
 
 The road: read the bytes, take out what we posted earlier, write down the new instances as text,
 put them before the end of the data, replace the target as a whole.  Every byte of the model stays
-where it was; ``append`` says how, ``remove`` how our entities are found when another program has
-rewritten the file.
+where it was; ``append`` says how, ``clearing`` how our entities are found when another program
+has rewritten the file.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable
+import os
+from collections.abc import Callable, Collection
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import Literal
 
-from analysis_core.errors import IfcWriteError
+from analysis_core.errors import IfcReadError, IfcWriteError
 from analysis_core.findings import Finding
-from analysis_core.ifc import append, atomic
-from analysis_core.ifc.container import read_container
-from analysis_core.ifc.governing import element_effects, element_parts
+from analysis_core.ifc import append, atomic, clearing
+from analysis_core.ifc.container import Container, read_container
+from analysis_core.ifc.governing import Part, element_effects, element_parts
 from analysis_core.ifc.measures import measures
 from analysis_core.ifc.owner import owner_history
-from analysis_core.ifc.property_sets import PropertySet, SetMaker
-from analysis_core.ifc.set_lines import write_sets
+from analysis_core.ifc.property_sets import (
+    DIAGRAMS,
+    EFFECTS,
+    REACTIONS,
+    RECORD,
+    PropertySet,
+    SetMaker,
+)
+from analysis_core.ifc.set_contents import timeless
+from analysis_core.ifc.set_lines import find_elements, write_sets
 from analysis_core.ifc.step_index import StepIndex
-from analysis_core.ifc.support_reactions import reaction_set, support_reactions
+from analysis_core.ifc.support_reactions import (
+    SupportReactions,
+    reaction_set,
+    support_reactions,
+)
 from analysis_core.results import Outcome
 
 Progress = Callable[[str, float], None]
@@ -32,7 +45,7 @@ Progress = Callable[[str, float], None]
 
 @dataclass(frozen=True, slots=True)
 class PostReport:
-    """What posting did.  Counts are of property sets.
+    """What posting did: property sets that are new, that have changed, and that have not.
 
     ``path`` is "append" where bytes were only added to the model, "general" where entities of
     ours that another program had rewritten were taken out first.
@@ -45,72 +58,231 @@ class PostReport:
     findings: tuple[Finding, ...] = ()
 
 
+@dataclass(frozen=True, slots=True)
+class RemoveReport:
+    """What was taken out: the number of property sets.
+
+    ``path`` is "append" where our blocks were as we had written them: then the file is again, bit
+    for bit, what it was before posting.
+    """
+
+    removed: int
+    path: Literal["append", "general"]
+
+
 def post(
     source_path: str | Path,
     target_path: str | Path,
     outcome: Outcome,
     *,
     analysis_model: bool = False,
+    only: Collection[str] = (),
     progress: Progress | None = None,
     computed_at: datetime | None = None,
 ) -> PostReport:
     """Write an outcome into a copy of its model; the same path twice replaces it.
 
-    ``computed_at``: now where None.  Raises IfcReadError where the model cannot be read,
-    IfcWriteError where the target cannot be written.
+    ``outcome`` holds all lines of the model.  ``only``: marks of the lines to be written, all
+    where empty; then what was posted for others stays.  Otherwise everything posted earlier gives
+    way.  ``computed_at``: now where None.
+
+    Raises IfcReadError where the model cannot be read, IfcWriteError where the target cannot be
+    written.
     """
     tell = progress or _silent
+    job = _Job(outcome, only, computed_at or datetime.now(UTC), tell)
+    source = Path(source_path)
     with atomic.writing_to(target_path) as target:
-        tell("Posting", 0.0)
-        stored = read_container(Path(source_path))
-        index = StepIndex(stored.text)
-        _check(index, Path(source_path).name)
-        maker_time = computed_at or datetime.now(UTC)
-        lines = append.Lines(append.first_free(index))
-        sets, findings = _sets(outcome, index, lines, maker_time)
-        tell("Posting", 0.4)
-        findings += write_sets(sets, index, lines, owner_history(index, lines))
-        tell("Posting", 0.8)
-        assert index.data_end is not None  # _check has seen to it
-        parts = append.with_block(
-            stored.text, index.data_end, lines.text(index.newline), append.RESULTS, index.newline
-        )
+        guard = _Guard(source, target)
+        stored = read_container(source)
+        parts, report = job.written(stored, source.name)
+        guard.check()
         atomic.replace_file(target, stored.packed(parts))
-        tell("Posting", 1.0)
-    return PostReport(len(sets), 0, 0, "append", tuple(findings))
+    tell("Posting", 1.0)
+    return report
 
 
-def _sets(
-    outcome: Outcome, index: StepIndex, lines: append.Lines, moment: datetime
-) -> tuple[list[PropertySet], list[Finding]]:
-    maker = SetMaker(index.schema, measures(index, lines), outcome.rules, moment)
-    sets: list[PropertySet] = []
-    findings: list[Finding] = []
-    for element, parts in element_parts(outcome).items():
-        effects = element_effects(element, parts)
-        if effects is None:
-            continue
-        if not effects.finite:
-            findings.append(_not_finite(element, effects.results[0].line.mark))
-            continue
-        sets.append(maker.effects(effects))
-        if effects.curves:
-            sets.append(maker.diagrams(effects))
-        sets.append(maker.record(element, effects.results))
-    for element, found in support_reactions(outcome).items():
+def remove(source_path: str | Path, target_path: str | Path) -> RemoveReport:
+    """Write a copy of a model without anything of ours; the same path twice replaces it.
+
+    Raises IfcReadError where the model cannot be read, IfcWriteError where the target cannot be
+    written.
+    """
+    source = Path(source_path)
+    with atomic.writing_to(target_path) as target:
+        guard = _Guard(source, target)
+        stored = read_container(source)
+        base, count, path = clearing.removed(stored.text)
+        guard.check()
+        content = stored.packed([base]) if base != stored.text else [stored.stored]
+        atomic.replace_file(target, content)
+    return RemoveReport(count, path)
+
+
+class _Job:
+    """One posting: what is wanted, and what it becomes in a file."""
+
+    def __init__(
+        self, outcome: Outcome, only: Collection[str], moment: datetime, tell: Progress
+    ) -> None:
+        self._outcome = outcome
+        self._moment = moment
+        self._tell = tell
+        self._findings: list[Finding] = []
+        self._only = only
+        self._parts = element_parts(outcome)
+        self._supports = support_reactions(outcome)
+        if only:
+            self._restrict(frozenset(only))
+
+    def written(self, stored: Container, name: str) -> tuple[list[bytes | memoryview], PostReport]:
+        """Return the file with the results, in parts."""
+        self._tell("Posting", 0.0)
+        cleared = self._cleared(stored.text)
+        self._tell("Posting", 0.2)
+        index = StepIndex(cleared.base)
+        _check(index, name)
+        self._findings += _file_findings(index, stored, self._outcome, cleared, name)
+        elements, findings = find_elements({**self._parts, **self._supports}, index)
+        self._findings += findings
+        self._tell("Posting", 0.4)
+        lines = append.Lines(append.first_free(index, cleared.kept))
+        sets = self._sets(index, lines, elements)
+        set_ids = write_sets(sets, elements, lines, owner_history(index, lines))
+        self._tell("Posting", 0.8)
+        assert index.data_end is not None  # _check has seen to it
+        text = cleared.kept + lines.text(index.newline)
+        parts: list[bytes | memoryview] = [index.data]
+        if text:
+            parts = append.with_block(index, text, append.RESULTS)
+        return parts, self._report(cleared, lines, text, sets, set_ids)
+
+    def _restrict(self, only: frozenset[str]) -> None:
+        """Keep the elements of some lines, and what these bear on."""
+        self._parts = {
+            element: parts
+            for element, parts in self._parts.items()
+            if any(part.result.line.mark in only for part in parts)
+        }
+        self._supports = {
+            element: found for element, found in self._supports.items() if found.lines & only
+        }
+
+    def _cleared(self, data: bytes) -> clearing.Cleared:
+        if not self._only:
+            return clearing.cleared_of_all(data)
+        wanted = {(e, name) for e in self._parts for name in (EFFECTS, DIAGRAMS, RECORD)}
+        wanted |= {(element, REACTIONS) for element in self._supports}
+        return clearing.cleared_of_some(data, wanted, (), ())
+
+    def _sets(
+        self, index: StepIndex, lines: append.Lines, elements: dict[str, int]
+    ) -> list[PropertySet]:
+        maker = SetMaker(index.schema, measures(index, lines), self._outcome.rules, self._moment)
+        sets: list[PropertySet] = []
+        for element, parts in self._parts.items():
+            if element in elements:
+                sets += self._element_sets(element, parts, maker)
+        for element, found in self._supports.items():
+            if element in elements:
+                sets += self._support_sets(found, maker)
+        return sets
+
+    def _element_sets(self, element: str, parts: list[Part], maker: SetMaker) -> list[PropertySet]:
+        found = element_effects(element, parts)
+        if found is None:
+            return [maker.record(element, (part.result for part in parts))]
         if not found.finite:
-            findings.append(_not_finite(element, None))
-        elif (made := reaction_set(found, maker)) is not None:
-            sets.append(made)
-    return sets, findings
+            self._findings.append(_not_finite(element, found.results[0].line.mark))
+            return []
+        if len(found.results) > 1:
+            self._findings.append(_several_lines(element, found.marks))
+        sets = [maker.effects(found)]
+        if found.curves:
+            sets.append(maker.diagrams(found))
+        return [*sets, maker.record(element, found.results)]
+
+    def _support_sets(self, found: SupportReactions, maker: SetMaker) -> list[PropertySet]:
+        if not found.finite:
+            self._findings.append(_not_finite(found.element, None))
+            return []
+        made = reaction_set(found, maker)
+        return [made] if made is not None else []
+
+    def _report(
+        self,
+        cleared: clearing.Cleared,
+        lines: append.Lines,
+        text: bytes,
+        sets: list[PropertySet],
+        set_ids: list[str],
+    ) -> PostReport:
+        findings = tuple(dict.fromkeys(self._findings))
+        if cleared.replaced and timeless(cleared.replaced) == timeless(text):
+            return PostReport(0, 0, len(sets), cleared.path, findings)
+        known = [(g, made) for g, made in zip(set_ids, sets, strict=True) if g in cleared.before]
+        same = sum(cleared.before.equal(g, made, lines.body) for g, made in known)
+        return PostReport(len(sets) - len(known), len(known) - same, same, cleared.path, findings)
+
+
+class _Guard:
+    """Sees that a model written in place is not changed by others meanwhile."""
+
+    def __init__(self, source: Path, target: Path) -> None:
+        self._source = source
+        try:
+            self._in_place = os.path.samefile(source, target)
+        except OSError:
+            self._in_place = False
+        self._before = self._state()
+
+    def check(self) -> None:
+        if self._in_place and self._state() != self._before:
+            raise IfcWriteError(
+                f"'{self._source.name}' was changed by another program while results were written "
+                f"down; nothing was written. Run again."
+            )
+
+    def _state(self) -> tuple[int, int, int] | None:
+        try:
+            status = os.stat(self._source)
+        except OSError:
+            return None
+        return status.st_ino, status.st_size, status.st_mtime_ns
 
 
 def _check(index: StepIndex, name: str) -> None:
     if index.open_string or index.data_end is None:
-        raise IfcWriteError(
+        raise IfcReadError(
             f"'{name}' has no proper end (ENDSEC; and END-ISO-10303-21; are wanted), so "
             f"nothing can be added to it. Copy or export it again."
         )
+
+
+def _file_findings(
+    index: StepIndex, stored: Container, outcome: Outcome, cleared: clearing.Cleared, name: str
+) -> list[Finding]:
+    findings = []
+    if index.signed:
+        findings.append(
+            Finding(
+                "warning",
+                "signature-broken",
+                f"'{name}' is signed. The signature was kept and no longer fits: the file has "
+                f"more in it now. Taking the results out makes it fit again.",
+            )
+        )
+    analysed_this = outcome.fingerprint in ("", stored.fingerprint)
+    if not analysed_this and not cleared.replaced and not cleared.kept:
+        findings.append(
+            Finding(
+                "warning",
+                "model-changed",
+                f"'{name}' is not the file that was analysed, or has changed since. The results "
+                f"were written all the same; analyse it again.",
+            )
+        )
+    return findings
 
 
 def _not_finite(element: str, mark: str | None) -> Finding:
@@ -121,6 +293,16 @@ def _not_finite(element: str, mark: str | None) -> Finding:
         f"Check stiffness and actions of its line.",
         (element,),
         mark,
+    )
+
+
+def _several_lines(element: str, marks: str) -> Finding:
+    return Finding(
+        "note",
+        "element-of-several-lines",
+        f"{element} belongs to several lines ({marks}): the governing values are those over all of "
+        f"them, the diagrams those of the line with the larger moments.",
+        (element,),
     )
 
 

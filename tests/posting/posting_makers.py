@@ -207,11 +207,11 @@ def small_model(
         "#22=IFCGEOMETRICREPRESENTATIONCONTEXT($,'Model',3,1.E-05,#21,$);",
         f"#23=IFCPROJECT('{global_id('project')}',{own},'P',$,$,$,$,(#22),"
         f"{'#16' if units else '$'});",
-        "#24=IFCLOCALPLACEMENT($,#21);",
+        *[f"#{24 + i}=IFCLOCALPLACEMENT($,#21);" for i in range(4)],
         f"#30=IFCBEAM('{BEAM}',{own},'{name}',$,$,#24,$,$" + end + ");",
-        f"#31=IFCBEAM('{SECOND_BEAM}',{own},'{name} 2',$,$,#24,$,$" + end + ");",
-        f"#32=IFCCOLUMN('{COLUMN_A}',{own},'C-1',$,$,#24,$,$" + end + ");",
-        f"#33=IFCCOLUMN('{COLUMN_B}',{own},'C-2',$,$,#24,$,$" + end + ");",
+        f"#31=IFCBEAM('{SECOND_BEAM}',{own},'{name} 2',$,$,#25,$,$" + end + ");",
+        f"#32=IFCCOLUMN('{COLUMN_A}',{own},'C-1',$,$,#26,$,$" + end + ");",
+        f"#33=IFCCOLUMN('{COLUMN_B}',{own},'C-2',$,$,#27,$,$" + end + ");",
         "ENDSEC;", "END-ISO-10303-21;",
     ]  # fmt: skip
     return (newline.join(text) + newline + tail).encode()
