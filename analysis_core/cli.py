@@ -83,6 +83,7 @@ def _parser() -> argparse.ArgumentParser:
     _balance_options(commands)
     _post_options(commands)
     _reconcile_options(commands)
+    _sheet_options(commands)
     _rules_options(commands)
     return parser
 
@@ -156,6 +157,19 @@ def _reconcile_options(commands: Any) -> None:
     )
 
 
+def _sheet_options(commands: Any) -> None:
+    about = "write the calculation sheet, one HTML file that prints"
+    command = _command(commands, "sheet", _sheet, about)
+    _model_options(command)
+    command.add_argument(
+        "-o", "--output", metavar="SHEET.html", required=True, help="the sheet to write"
+    )
+    command.add_argument(
+        "--storey", metavar="NAME", action="append", default=[],
+        help="only the lines of this storey (may be repeated)",
+    )  # fmt: skip
+
+
 def _rules_options(commands: Any) -> None:
     about = "list the built-in rule sets, or print one"
     command = _command(commands, "rules", _rules, about)
@@ -215,6 +229,17 @@ def _reconcile(options: argparse.Namespace) -> int:
         _write(Path(options.csv), report.changes_csv(found, units))
     _put(options, lambda: report.changes_document(found), report.changes_text(found, units))
     return _status(found.after)
+
+
+def _sheet(options: argparse.Namespace) -> int:
+    settings = _settings(options)
+    outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
+    if options.storey:
+        outcome = pipeline.of_storeys(outcome, options.storey)
+    _write(Path(options.output), pipeline.sheet(outcome, settings))
+    _put(options, lambda: pipeline.document(outcome), "")
+    print(f"Wrote '{safe(options.output)}'. {CAUTION}", file=sys.stderr)
+    return _status(outcome)
 
 
 def _rules(options: argparse.Namespace) -> int:

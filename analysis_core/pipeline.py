@@ -9,6 +9,7 @@ from __future__ import annotations
 import difflib
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
+from datetime import datetime
 from pathlib import Path
 from typing import Any
 
@@ -26,6 +27,7 @@ from analysis_core.revision import Reconciliation
 from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
 from analysis_core.solving import Memory, solve_lines
+from analysis_core.units import display_units
 
 Progress = Callable[[str, float], None]
 
@@ -183,6 +185,27 @@ def document(outcome: Outcome, *, stations: int = 21) -> dict[str, Any]:
     from analysis_core.results_file import results_document
 
     return results_document(outcome, stations=stations)
+
+
+def of_storeys(outcome: Outcome, storeys: Sequence[str]) -> Outcome:
+    """Return the lines of the named storeys alone.  Raises JobError for a name without lines."""
+    known = [r.line.storey for r in outcome.lines if r.line.storey]
+    for name in storeys:
+        if name not in known:
+            near = difflib.get_close_matches(name, known, n=1, cutoff=0.0)
+            hint = f"; the nearest is '{near[0]}'" if near else ""
+            raise JobError(f"No line belongs to a storey '{name}'{hint}.")
+    chosen = tuple(r for r in outcome.lines if r.line.storey in storeys)
+    return replace(outcome, model=_restricted(outcome.model, chosen), lines=chosen)
+
+
+def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
+    """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
+    from analysis_core.sheet.document import sheet as write_sheet
+
+    units = display_units(settings.display.system, settings.display.units)
+    today = date or datetime.now().date().isoformat()
+    return write_sheet(outcome, units, title=settings.title, date=today)
 
 
 def survey_document(found: Survey) -> dict[str, Any]:
