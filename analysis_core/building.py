@@ -115,6 +115,39 @@ class Carrier:
 
 
 @dataclass(frozen=True, slots=True)
+class Area:
+    """A surface that takes area loads: a slab, a space, or a surface member of an analysis model.
+
+    ``outline`` and ``voids`` are simple polygons in plan (x, y), in either sense of rotation.
+    ``bottom`` and ``top`` are the levels between which it lies (a space: its floor twice).
+    ``span`` is the direction (x, y) in which it carries one way, None where that is not stated.
+    """
+
+    global_id: str
+    name: str
+    ifc_class: str
+    bottom: float
+    top: float
+    outline: tuple[tuple[float, float], ...]
+    voids: tuple[tuple[tuple[float, float], ...], ...] = ()
+    span: tuple[float, float] | None = None
+    storey: str | None = None
+    type_name: str = ""
+    material: Material | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class AreaAction:
+    """Force per square metre of plan on an area, as a vector in the world, N/m²."""
+
+    global_id: str
+    name: str
+    case: str
+    area: str
+    force: Vector
+
+
+@dataclass(frozen=True, slots=True)
 class AxisAction:
     """Forces on a member, as vectors in the world, already per true length of the member.
 
@@ -206,6 +239,8 @@ class Building:
     cases: tuple[LoadCase, ...] = ()
     combinations: tuple[LoadCombination, ...] = ()
     findings: tuple[Finding, ...] = ()
+    areas: tuple[Area, ...] = ()
+    area_actions: tuple[AreaAction, ...] = ()
     storeys: tuple[tuple[str, float], ...] = ()
     """Name and elevation (m, world) of each storey, lowest first."""
     counts: Mapping[str, int] = field(default_factory=dict)
