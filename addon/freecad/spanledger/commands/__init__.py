@@ -4,7 +4,16 @@ from __future__ import annotations
 
 import FreeCADGui
 
-from . import balance_lines, open_model, post_results, redo_decision, show_desk, undo_decision
+from . import (
+    balance_lines,
+    open_model,
+    post_results,
+    redo_decision,
+    show_building,
+    show_desk,
+    undo_decision,
+    use_job,
+)
 
 SEPARATOR = "Separator"
 
@@ -13,16 +22,18 @@ def register() -> list[str]:
     """Make the commands known to FreeCAD; return their names in the order of the toolbar."""
     commands = {
         "Spanledger_Open": open_model.OpenModel(),
+        "Spanledger_Job": use_job.UseJob(),
         "Spanledger_Balance": balance_lines.BalanceLines(),
         "Spanledger_Undo": undo_decision.UndoDecision(),
         "Spanledger_Redo": redo_decision.RedoDecision(),
         "Spanledger_Post": post_results.PostResults(),
+        "Spanledger_Building": show_building.ShowBuilding(),
         "Spanledger_Desk": show_desk.ShowDesk(),
     }
     for name, command in commands.items():
         FreeCADGui.addCommand(name, command)
     return [
-        "Spanledger_Open", "Spanledger_Balance", SEPARATOR,
+        "Spanledger_Open", "Spanledger_Job", "Spanledger_Balance", SEPARATOR,
         "Spanledger_Undo", "Spanledger_Redo", SEPARATOR,
-        "Spanledger_Post", "Spanledger_Desk",
+        "Spanledger_Post", SEPARATOR, "Spanledger_Building", "Spanledger_Desk",
     ]  # fmt: skip

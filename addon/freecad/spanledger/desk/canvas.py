@@ -7,7 +7,7 @@ from typing import Any
 from analysis_core.units import DisplayUnits, display_units
 
 from ..present.drawing import Drawing, Spot
-from ..present.layout import lay_out
+from ..present.layout import lay_out, least_height
 from ..present.look import Palette, palette_for
 from ..present.strip import Strip, values_at
 from ..qt import Qt, QtCore, QtGui, QtWidgets, Signal
@@ -19,6 +19,7 @@ _ALIGN = {
     "right": Qt.AlignmentFlag.AlignRight,
 }
 _STEP = 0.01
+_LEAST = (420, 240)
 
 
 class Canvas(QtWidgets.QWidget):
@@ -29,7 +30,7 @@ class Canvas(QtWidgets.QWidget):
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
         self.setObjectName("SpanledgerCanvas")
-        self.setMinimumSize(420, 260)
+        self.setMinimumSize(*_LEAST)
         self.setMouseTracking(True)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setAccessibleName(translate("Spanledger", "Elevation and curves of the chosen line"))
@@ -43,6 +44,7 @@ class Canvas(QtWidgets.QWidget):
     def show_strip(self, strip: Strip | None, units: DisplayUnits) -> None:
         """Show a line; None shows nothing."""
         self.strip, self.units = strip, units
+        self._take_room()
         self._lay_out()
 
     def choose(self, chosen: tuple[str, int] | None) -> None:
@@ -53,6 +55,7 @@ class Canvas(QtWidgets.QWidget):
     def show_quantities(self, quantities: tuple[str, ...]) -> None:
         """Show only these curves."""
         self.quantities = quantities
+        self._take_room()
         self._lay_out()
 
     def palette_now(self) -> Palette:
@@ -118,6 +121,13 @@ class Canvas(QtWidgets.QWidget):
         self.cursor = x
         self.update()
 
+    def _take_room(self) -> None:
+        """Ask for the height that can be read; the area around scrolls where it has less."""
+        width, height = _LEAST
+        if self.strip is not None:
+            height = max(height, round(least_height(self.strip, self.quantities)))
+        self.setMinimumSize(width, height)
+
     def _lay_out(self) -> None:
         if self.strip is None:
             self.drawing = None
@@ -164,10 +174,16 @@ def _paint(painter: Any, drawing: Drawing, palette: Palette, font: Any) -> None:
         chosen = _small(font) if words.small else QtGui.QFont(font)
         chosen.setBold(words.bold)
         painter.setFont(chosen)
-        painter.setPen(_colour(palette, words.role))
         left = {"left": words.x, "centre": words.x - 200.0, "right": words.x - 400.0}[words.align]
         box = QtCore.QRectF(left, words.y - 10.0, 400.0, 20.0)
-        painter.drawText(box, int(_ALIGN[words.align] | Qt.AlignmentFlag.AlignVCenter), words.text)
+        flags = int(_ALIGN[words.align] | Qt.AlignmentFlag.AlignVCenter)
+        halo = _colour(palette, "ground")
+        halo.setAlphaF(0.75)
+        painter.setPen(halo)  # a ground of their own keeps words readable over lines
+        for dx, dy in ((-1, 0), (1, 0), (0, -1), (0, 1)):
+            painter.drawText(box.translated(dx, dy), flags, words.text)
+        painter.setPen(_colour(palette, words.role))
+        painter.drawText(box, flags, words.text)
 
 
 def _paint_box(painter: Any, palette: Palette, rows: list[str], x: float, area: Any) -> None:

@@ -8,7 +8,7 @@ from analysis_core.units import DisplayUnits
 
 from ..present.diagrams import View
 from ..present.strip import Strip
-from ..qt import QtCore, QtWidgets, Signal
+from ..qt import Qt, QtCore, QtWidgets, Signal
 from ..texts import tr, translate
 from .canvas import Canvas
 from .inspector import Inspector
@@ -58,7 +58,7 @@ class LineDesk(QtWidgets.QWidget):
         layout.addLayout(top)
         self.inspector = Inspector()
         middle = QtWidgets.QHBoxLayout()
-        middle.addWidget(self.canvas, 1)
+        middle.addWidget(_scrolled(self.canvas), 1)
         middle.addWidget(self.inspector)
         layout.addLayout(middle, 1)
         self.view.currentIndexChanged.connect(self._view_changed)
@@ -97,6 +97,16 @@ class LineDesk(QtWidgets.QWidget):
 
     def _curves_changed(self, _on: bool) -> None:
         self.canvas.show_quantities(tuple(q for q, box in self.curves.items() if box.isChecked()))
+
+
+def _scrolled(widget: Any) -> Any:
+    area = QtWidgets.QScrollArea()
+    area.setWidgetResizable(True)
+    area.setFrameShape(QtWidgets.QFrame.Shape.NoFrame)
+    area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+    area.setMinimumHeight(200)
+    area.setWidget(widget)
+    return area
 
 
 _KINDS = {"envelope": "Envelope", "combination": "Combination", "case": "Case"}

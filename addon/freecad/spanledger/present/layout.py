@@ -28,7 +28,9 @@ SYMBOL = 13.0
 TITLES = {"moment": "Moment", "shear": "Shear", "deflection": "Deflection"}
 # Which way a positive value is drawn: moments on the side in tension, deflections as they go.
 DOWNWARD = {"moment": True, "shear": False, "deflection": True}
-MOST_ACTION_ROWS = 4
+MOST_ACTION_ROWS = 5
+ROW, BAND, BELOW_AXIS = 27.0, 74.0, 68.0
+"""Least height of a row of actions and of a curve's band; what lies below the beam's axis."""
 
 Measure = Callable[[str], float]
 
@@ -52,14 +54,24 @@ def lay_out(
     drawing = Drawing(width, height, LEFT, max(width - LEFT - RIGHT, 40.0) / length)
     shown = [q for q in quantities if q in strip.curves]
     rows = _action_rows(strip.actions)
-    needed = TOP + 26.0 * len(rows) + 104.0
-    elevation = max(needed, 0.36 * height) if shown else height
+    spare = max(height - least_height(strip, quantities), 0.0)
+    elevation = _least_elevation(rows) + (0.25 * spare if shown else spare)
     _elevation(drawing, strip, rows, elevation, units, measure, chosen)
     each = (height - elevation - 4.0) / max(len(shown), 1)
     for number, quantity in enumerate(shown):
         top = elevation + number * each
         _band(drawing, strip, strip.curves[quantity], top, each, units, measure)
     return drawing
+
+
+def least_height(strip: Strip, quantities: Sequence[str]) -> float:
+    """Return the height in pixels that a strip needs to be read."""
+    shown = sum(q in strip.curves for q in quantities)
+    return _least_elevation(_action_rows(strip.actions)) + BAND * shown + 4.0
+
+
+def _least_elevation(rows: Sequence[object]) -> float:
+    return TOP + ROW * len(rows) + 24.0 + BELOW_AXIS
 
 
 def _elevation(
@@ -71,14 +83,14 @@ def _elevation(
     measure: Measure,
     chosen: tuple[str, int] | None,
 ) -> None:
-    axis = height - 72.0
-    row_height = min(34.0, (axis - TOP - 22.0) / max(len(rows), 1))
+    axis = height - BELOW_AXIS
+    row_height = min(1.4 * ROW, (axis - TOP - 20.0) / max(len(rows), 1))
     for number, (case, actions) in enumerate(rows):
         bottom = axis - 18.0 - row_height * (len(rows) - 1 - number)
         _actions(drawing, strip, case, actions, bottom, row_height, measure)
     _members(drawing, strip, axis, units, measure, chosen)
     _joints(drawing, strip, axis, units, chosen)
-    _dimensions(drawing, strip, axis + 52.0, units, measure)
+    _dimensions(drawing, strip, axis + 46.0, units, measure)
 
 
 def _members(
@@ -157,14 +169,27 @@ def _dimensions(
 
 
 def _action_rows(actions: Sequence[ShownAction]) -> list[tuple[str, list[ShownAction]]]:
-    by_case: dict[str, list[ShownAction]] = {}
+    """Return (case, actions) per row; actions of a case that lie over one another get rows each."""
+    by_case: dict[str, list[list[ShownAction]]] = {}
     for action in actions:
-        by_case.setdefault(action.case, []).append(action)
-    rows = list(by_case.items())
+        layers = by_case.setdefault(action.case, [])
+        for layer in layers:
+            if not any(_overlap(action, other) for other in layer):
+                layer.append(action)
+                break
+        else:
+            layers.append([action])
+    rows = [(case, layer) for case, layers in by_case.items() for layer in layers]
     if len(rows) <= MOST_ACTION_ROWS:
         return rows
-    rest = rows[MOST_ACTION_ROWS - 1 :]
-    return [*rows[: MOST_ACTION_ROWS - 1], (f"{len(rest)} more cases", [])]
+    kept = rows[: MOST_ACTION_ROWS - 1]
+    return [*kept, (f"{len(rows) - len(kept)} more", [])]
+
+
+def _overlap(one: ShownAction, other: ShownAction) -> bool:
+    if one.kind != "spread" or other.kind != "spread":
+        return False
+    return one.start < other.end - 1e-6 and other.start < one.end - 1e-6
 
 
 def _actions(
