@@ -253,3 +253,40 @@ def frame(seed: int) -> Line:
             )
     line = Line(f"frame {seed}", tuple(joints), tuple(members), kind="frame")
     return replace(line, actions=tuple(_actions(rng, line)))
+
+
+def plain_line(seed: int, case: str = "q") -> Line:
+    """Return a random level beam line on rigid supports, perhaps with overhangs."""
+    rng = random.Random(seed)
+    count = rng.randint(1, 6)
+    tails = (rng.random() < 0.35, rng.random() < 0.35)
+    joints, members, x = [], [], 0.0
+    for index in range(count + 1):
+        bare = (index == 0 and tails[0]) or (index == count and tails[1])
+        rotation = rng.choice((FREE, FREE, FREE, RIGID, 10.0 ** rng.uniform(5.0, 8.0)))
+        support = None if bare else Support(RIGID, FREE, rotation)
+        joints.append(Joint(index, x, 0.0, support=support))
+        x += rng.uniform(0.8, 9.0)
+    for index in range(count):
+        length = joints[index + 1].x - joints[index].x
+        members.append(
+            Member(
+                index,
+                index,
+                index + 1,
+                pieces(rng, length, plain=rng.random() < 0.5),
+                start_spring=spring(rng, 0.15),
+                end_spring=spring(rng, 0.15),
+                span=index + 1,
+            )
+        )
+    line = Line(f"plain {seed}", tuple(joints), tuple(members))
+    actions = [
+        replace(action, horizontal=0.0)
+        if isinstance(action, JointForce)
+        else replace(action, axial=() if isinstance(action, DistributedForce) else 0.0)
+        if isinstance(action, DistributedForce | PointForce)
+        else action
+        for action in _actions(rng, line)
+    ]
+    return replace(line, actions=tuple(replace(action, case=case) for action in actions))

@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 import pytest
 from distribution_oracle import exact
-from random_lines import beam_line, frame
+from random_lines import beam_line, frame, plain_line
 
 from analysis_core.distribution import solve
 from analysis_core.distribution.bars import reduce
@@ -63,3 +63,8 @@ def test_a_random_beam_line_agrees_with_extended_precision(seed: int) -> None:
 @pytest.mark.parametrize("seed", range(2000, 2012))
 def test_a_random_frame_agrees_with_extended_precision(seed: int) -> None:
     compare(frame(seed))
+
+
+@pytest.mark.parametrize("seed", range(3000, 3025))
+def test_a_random_plain_line_agrees_with_extended_precision(seed: int) -> None:
+    compare(plain_line(seed))

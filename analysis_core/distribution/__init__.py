@@ -17,14 +17,21 @@ Conventions beside those of ``model``:
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+import gc
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 
 from analysis_core.distribution.assembly import solve_any
+from analysis_core.distribution.plain_lines import PlainLine, read
+from analysis_core.distribution.plain_results import solve_plain
 from analysis_core.errors import AnalysisError
 from analysis_core.model import Line
 from analysis_core.results import LineSolution
 
 __all__ = ["solve", "solve_lines"]
+
+CHUNK = 2_000
+"""Lines solved at once: enough to make arrays pay, few enough to stay in the cache."""
 
 
 def solve(line: Line, cases: Sequence[str]) -> LineSolution:
@@ -33,15 +40,46 @@ def solve(line: Line, cases: Sequence[str]) -> LineSolution:
     Raises MechanismError where parts of the line move freely, ModelError where it cannot be
     analysed as given.
     """
-    return solve_any(line, cases)
+    plain = read(line, {name: index for index, name in enumerate(cases)})
+    return solve_any(line, cases) if plain is None else solve_plain([plain], cases)[0]
 
 
 def solve_lines(lines: Sequence[Line], cases: Sequence[str]) -> list[LineSolution | AnalysisError]:
     """Solve many lines; a line that cannot be solved gives its error and stops no other."""
-    solved: list[LineSolution | AnalysisError] = []
-    for line in lines:
+    with _undisturbed():
+        return _solve_lines(lines, cases)
+
+
+@contextmanager
+def _undisturbed() -> Iterator[None]:
+    """Pause the garbage collector: many small objects are made here and none is garbage."""
+    enabled = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if enabled:
+            gc.enable()
+
+
+def _solve_lines(lines: Sequence[Line], cases: Sequence[str]) -> list[LineSolution | AnalysisError]:
+    solved: list[LineSolution | AnalysisError | None] = [None] * len(lines)
+    column = {name: index for index, name in enumerate(cases)}
+    alike: dict[int, list[tuple[int, PlainLine]]] = {}
+    for index, line in enumerate(lines):
+        plain = None
         try:
-            solved.append(solve(line, cases))
+            plain = read(line, column)
+            if plain is None:
+                solved[index] = solve_any(line, cases)
         except AnalysisError as error:
-            solved.append(error)
-    return solved
+            solved[index] = error
+        if plain is not None:
+            alike.setdefault(len(plain.lengths), []).append((index, plain))
+    for group in alike.values():
+        for low in range(0, len(group), CHUNK):
+            part = group[low : low + CHUNK]
+            found = solve_plain([plain for _, plain in part], cases)
+            for (index, _), solution in zip(part, found, strict=True):
+                solved[index] = solution
+    return [outcome for outcome in solved if outcome is not None]
