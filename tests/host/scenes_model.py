@@ -3,12 +3,14 @@
 import shutil
 from pathlib import Path
 
+import FreeCAD
 import FreeCADGui
 from host_tools import (
     PICTURES,
     QtWidgets,
     activate,
     click,
+    count_pixels,
     picture_of_screen,
     picture_of_view,
     settle,
@@ -16,6 +18,7 @@ from host_tools import (
     widget,
 )
 from PySide import QtCore
+from PySide2 import QtTest
 
 SAMPLES = Path(__file__).resolve().parents[2] / "sample_models"
 PHYSICAL, JOB = "quarry_lane_physical_ifc4.ifc", "quarry_lane.yaml"
@@ -112,4 +115,193 @@ def decide():
     then()
     found["added"] = job.read_text(encoding="utf-8")
     picture_of_screen("decide_added")
+    return found
+
+
+def post_and_reopen():
+    """Post into a copy after reading the preview, save the document, close and reopen it."""
+    desk = activate()
+    path = copied()
+    opened(desk, path)
+    FreeCADGui.runCommand("Spanledger_Post")
+    settle()
+    tree = widget(QtWidgets.QTreeWidget, "SpanledgerPostTree")
+    picture_of_screen("post_preview")
+    target = path.with_name("posted.ifc")
+    widget(QtWidgets.QLineEdit, "SpanledgerPostPath").setText(str(target))
+    click(widget(QtWidgets.QPushButton, "SpanledgerPostNow"))
+    wait_until(lambda: not desk.runs.busy, what="posting")
+    settle()
+    found = {
+        "previewed": tree.topLevelItemCount(),
+        "told": desk.panels.running.message.text(),
+        "members": len({m.element for r in desk.solved.outcome.lines for m in r.line.members}),
+        "written": target.read_text(encoding="utf-8").count("'Spanledger_Effects'"),
+        "source_untouched": path.read_bytes() == (SAMPLES / PHYSICAL).read_bytes(),
+        "states": sorted({row.state for row in desk.panels.list.model._rows}),
+    }
+    picture_of_screen("posted")
+
+    document = path.with_name("kept.FCStd")
+    FreeCAD.ActiveDocument.saveAs(str(document))
+    FreeCAD.closeDocument(FreeCAD.ActiveDocument.Name)
+    settle()
+    found["after_close"] = desk.panels.list.model.shown()
+    FreeCAD.openDocument(str(document))
+    wait_until(lambda: desk.session is not None and desk.session.outcome, what="the reopened run")
+    wait_until(lambda: not desk.runs.busy, what="the reopened run")
+    settle()
+    found["after_reopen"] = desk.panels.list.model.shown()
+    from freecad.spanledger.document import find_beam_lines
+    from freecad.spanledger.draw.nodes import TRANSPARENCY
+    from freecad.spanledger.present.look import VIEW
+
+    obj = find_beam_lines(FreeCAD.ActiveDocument)
+    found["proxy"] = type(obj.ViewObject.Proxy).__module__
+    colour = [round((1 - TRANSPARENCY) * c + TRANSPARENCY * 255) for c in VIEW["sagging"]]
+    found["sagging"] = count_pixels(picture_of_view("reopened_view"), colour, 12)
+    return found
+
+
+def choose():
+    """Filter the list, choose in the list and in the 3D view, and look at a finding."""
+    desk = activate()
+    opened(desk, copied())
+    found = {}
+    words = widget(QtWidgets.QLineEdit, "SpanledgerFilter")
+    words.setText("roof")
+    settle(0.2)
+    found["filtered"] = desk.panels.list.model.shown()
+    found["count"] = widget(QtWidgets.QLabel, "SpanledgerCount").text()
+    words.setText("")
+    settle(0.2)
+
+    tree = widget(QtWidgets.QTreeView, "SpanledgerLines")
+    index = desk.panels.list.model.index_of(2)
+    click(tree.viewport(), tree.visualRect(index).center())
+    found["by_list"] = [desk.line, [s.SubElementNames for s in selection()]]
+
+    view = FreeCADGui.ActiveDocument.ActiveView
+    view.viewIsometric()
+    view.fitAll()
+    settle(0.3)
+    found["by_view"] = click_member(view, desk, line=8)
+
+    tabs = widget(QtWidgets.QTabWidget, "SpanledgerTabs")
+    tabs.setCurrentIndex(1)
+    settle(0.2)
+    rows = desk.panels.findings
+    number = next(i for i, row in enumerate(rows._rows) if row.line == 1)
+    rows.tree.setCurrentItem(rows.tree.topLevelItem(number))
+    found["message"] = widget(QtWidgets.QLabel, "SpanledgerFindingMessage").text()
+    click(widget(QtWidgets.QPushButton, "SpanledgerShowMe"))
+    found["by_finding"] = desk.line
+    picture_of_screen("finding")
+
+    view_box = widget(QtWidgets.QComboBox, "SpanledgerView")
+    shown = []
+    for i in range(view_box.count()):
+        view_box.setCurrentIndex(i)
+        settle(0.05)
+        obj = FreeCAD.ActiveDocument.BeamLines
+        shown.append([view_box.itemText(i), obj.Shown, max(obj.Upper, default=0.0)])
+    found["views"] = shown
+    canvas = widget(QtWidgets.QWidget, "SpanledgerCanvas")
+    QtTest.QTest.mouseMove(canvas, QtCore.QPoint(canvas.width() // 2, 120))
+    settle(0.2)
+    found["cursor"] = canvas.cursor
+    QtTest.QTest.keyClick(canvas, QtCore.Qt.Key_Right)
+    found["cursor_after_key"] = canvas.cursor
+    picture_of_screen("cursor")
+    return found
+
+
+def selection():
+    return FreeCADGui.Selection.getSelectionEx()
+
+
+def click_member(view, desk, line):
+    """Click in the 3D view on a member of a line; return the line that was chosen."""
+    proxy = FreeCAD.ActiveDocument.BeamLines.ViewObject.Proxy
+    member = int(proxy.members_of(line)[0])
+    start, end = proxy.scene.ends[member]
+    x, y = view.getPointOnScreen(FreeCAD.Vector(*(start + 0.37 * (end - start))))
+    port = view.graphicsView().viewport()
+    place = QtCore.QPoint(x, port.height() - 1 - y)
+    QtTest.QTest.mouseMove(port, place)
+    settle(0.2)
+    QtTest.QTest.mouseClick(port, QtCore.Qt.LeftButton, QtCore.Qt.NoModifier, place)
+    settle(0.4)
+    return desk.line
+
+
+def trouble():
+    """What must not bring the host down: bad files, lost files, closed documents, no rights."""
+    desk = activate()
+    found = {}
+
+    def told():
+        return desk.panels.running.message.text()
+
+    def open_and_wait(path):
+        desk.open_model(path)
+        wait_until(lambda: not desk.runs.busy, what="the run")
+        settle(0.2)
+        return told()
+
+    folder = PICTURES / "trouble"
+    shutil.rmtree(folder, ignore_errors=True)
+    folder.mkdir()
+    bad = folder / "bad.ifc"
+    bad.write_bytes((SAMPLES / PHYSICAL).read_bytes()[:5000])
+    found["truncated"] = open_and_wait(bad)
+    found["missing"] = open_and_wait(folder / "nothing.ifc")
+    (folder / "wrong.ifc").write_bytes((SAMPLES / PHYSICAL).read_bytes())
+    (folder / "wrong.yaml").write_text("titel: x\n", encoding="utf-8")
+    found["bad_job"] = open_and_wait(folder / "wrong.ifc")
+    for name in list(FreeCAD.listDocuments()):
+        FreeCAD.closeDocument(name)
+    settle(0.3)
+
+    path = copied()
+    desk.open_model(path)
+    FreeCAD.closeDocument(FreeCAD.ActiveDocument.Name)  # in the middle of the run
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    settle(0.3)
+    found["closed_mid_run"] = [len(FreeCAD.listDocuments()), desk.panels.list.model.shown()]
+
+    desk.open_model(path)
+    desk.runs.cancel()
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    settle(0.2)
+    found["cancelled"] = told()
+    FreeCAD.closeDocument(FreeCAD.ActiveDocument.Name)
+    settle(0.3)
+
+    opened(desk, path)
+    first = FreeCAD.ActiveDocument.Name
+    other = PICTURES / "work" / "other.ifc"
+    shutil.copy(SAMPLES / "quarry_lane_analytical_ifc4.ifc", other)
+    opened(desk, other)
+    found["two"] = [desk.session.path.name, len(FreeCAD.listDocuments())]
+    FreeCAD.setActiveDocument(first)
+    settle(0.5)
+    found["back"] = [desk.session.path.name, desk.panels.list.model.shown()]
+
+    path.with_suffix(".yaml").write_text("title: Another\n", encoding="utf-8")
+    wait_until(lambda: desk.session.stale, what="the change to be noticed")
+    found["stale"] = [told(), sorted({row.state for row in desk.panels.list.model._rows})]
+    FreeCADGui.runCommand("Spanledger_Balance")
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    settle(0.2)
+    found["balanced_again"] = sorted({row.state for row in desk.panels.list.model._rows})
+
+    path.unlink()
+    FreeCADGui.runCommand("Spanledger_Balance")
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    found["deleted"] = told()
+    found["still_shown"] = desk.panels.list.model.shown()
+    desk.post(folder / "no such folder" / "out.ifc")
+    wait_until(lambda: not desk.runs.busy, what="posting")
+    found["not_written"] = told()
     return found

@@ -32,3 +32,54 @@ def test_decisions_are_taken_undone_and_kept_by_clicks(in_freecad):
     assert found["still"]
     assert "uniform: 30 kN/m" in found["added"]
     assert loaded != redone
+
+
+def test_results_are_previewed_posted_and_found_again_on_reopening(in_freecad):
+    found = in_freecad("scenes_model:post_and_reopen")
+
+    assert found["previewed"] > 20
+    assert found["written"] == found["members"] > 10
+    assert "posted.ifc" in found["told"]
+    assert found["source_untouched"]
+    assert found["states"] == ["posted"]
+    assert found["after_close"] == 0
+    assert found["after_reopen"] == 11
+    assert found["proxy"] == "freecad.spanledger.draw.view"
+    assert found["sagging"] > 1000
+
+
+def test_a_line_is_chosen_in_the_list_in_the_3d_view_and_by_a_finding(in_freecad):
+    found = in_freecad("scenes_model:choose")
+
+    assert found["filtered"] == 4
+    assert found["count"] == "4 of 11 lines"
+    line, (members,) = found["by_list"]
+    assert line == 2
+    assert len(members) == 3
+    assert found["by_view"] == 8
+    assert found["by_finding"] == 1
+    assert "continuous" in found["message"]
+    titles = [shown for _, shown, _ in found["views"]]
+    assert len(set(titles)) == len(titles) > 10
+    assert len({largest for *_, largest in found["views"]}) > 5
+    assert found["cursor"] is not None
+    assert found["cursor_after_key"] > found["cursor"]
+
+
+def test_trouble_ends_in_a_sentence_and_never_in_a_lost_window(in_freecad):
+    found = in_freecad("scenes_model:trouble")
+
+    assert "bad.ifc" in found["truncated"]
+    assert "nothing.ifc" in found["missing"]
+    assert "titel" in found["bad_job"]
+    assert found["closed_mid_run"] == [0, 0]
+    assert "Stopped" in found["cancelled"]
+    assert found["two"] == ["other.ifc", 2]
+    assert found["back"] == ["quarry_lane_physical_ifc4.ifc", 11]
+    assert "balance its lines again" in found["stale"][0]
+    assert found["stale"][1] == ["stale"]
+    assert found["balanced_again"] == ["balanced"]
+    assert "quarry_lane_physical_ifc4.ifc" in found["deleted"]
+    assert found["still_shown"] == 11
+    assert "out.ifc" in found["not_written"]
+    assert "Traceback" not in found["log"]

@@ -85,7 +85,12 @@ def _elevation(
 ) -> None:
     axis = height - BELOW_AXIS
     row_height = min(1.4 * ROW, (axis - TOP - 20.0) / max(len(rows), 1))
+    named = ""
     for number, (case, actions) in enumerate(rows):
+        if case != named:
+            at = axis - 18.0 - row_height * (len(rows) - 1 - number) - 6.0
+            drawing.words.append(Words(10.0, at, _short(case, 11), "action", "left", small=True))
+            named = case
         bottom = axis - 18.0 - row_height * (len(rows) - 1 - number)
         _actions(drawing, strip, case, actions, bottom, row_height, measure)
     _members(drawing, strip, axis, units, measure, chosen)
@@ -201,7 +206,6 @@ def _actions(
     row_height: float,
     measure: Measure,
 ) -> None:
-    drawing.words.append(Words(10.0, bottom - 6.0, _short(case, 11), "action", "left", small=True))
     largest = max((max(abs(a.low), abs(a.high)) for a in actions if a.kind == "spread"), default=0)
     room = max(row_height - 16.0, 6.0)
     taken: list[tuple[float, float]] = []
