@@ -217,7 +217,8 @@ class GroupReader:
         value = float(stated)
         if not math.isfinite(value):
             return 1.0
-        if value not in (1.0, -1.0):
+        # A combination group of IFC2X3 is there for its factor; elsewhere one is unusual.
+        if value != 1.0 and self._groups[key].kind != "combination":
             self._notes.add(
                 "warning" if value == 0.0 else "note",
                 "load-factor",
@@ -291,7 +292,16 @@ class GroupReader:
                 elif member in self._groups and depth < _DEEPEST_NESTING:
                     todo.append((member, own * share, depth + 1))
         entity = self._groups[key].entity
-        return self._named_combination(entity, factors)
+        if not factors:
+            self._notes.add(
+                "warning",
+                "empty-combination",
+                f"{titled(entity)} holds no load case; it was left out.",
+                (global_id(entity),),
+            )
+        order = [case.name for case in self._cases.values()]
+        ordered = {name: factors[name] for name in sorted(factors, key=order.index)}
+        return self._named_combination(entity, ordered) if factors else None
 
     def _named_combination(self, entity: Any, factors: Mapping[str, float]) -> LoadCombination:
         name = name_of(entity) or f"Combination #{entity.id()}"

@@ -146,8 +146,8 @@ class MemberReader:
                 f"its depth is taken as upright. Correct its Axis.",
                 (key,),
             )
-        elif found.angle is None:
-            self._assumed_up.append(key)
+        elif found.angle is None and (len(entity) > 8 or abs(x[2]) > _VERTICAL):
+            self._assumed_up.append(key)  # IFC2X3 has no Axis; a beam's depth is upright there
         return _turned(x, frame, found.angle or 0.0)
 
     def _report_curved(self, entity: Any) -> None:

@@ -7,16 +7,16 @@ own.
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import Any
 
 from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed
-from analysis_core.ifc.curves import Measures
 from analysis_core.ifc.file_units import FileUnits
-from analysis_core.ifc.material_choice import NO_CHOICE
+from analysis_core.ifc.material_choice import NO_CHOICE, Choice
 from analysis_core.ifc.materials import MaterialReader, material_and_profile_of
-from analysis_core.ifc.profile_properties import Stated, stated_for
-from analysis_core.ifc.sections import SectionReader
+from analysis_core.ifc.profile_properties import Stated, stated_by_profile
+from analysis_core.ifc.sections import SectionReader, measures_of
 from analysis_core.model import Material, Section
 from analysis_core.settings import Settings
 
@@ -48,12 +48,17 @@ class MemberProperties:
         units: FileUnits = source.units
         self._units = units
         self._notes = notes
-        self._choices = material_and_profile_of(source)
         self._profiles = _profile_relations(source.file)
-        self._materials = MaterialReader(source.file, units, settings)
-        self._stated: dict[int, Stated] = {}
-        self._sections = SectionReader(Measures(units.length, units.angle), self._stated)
-        self._seen: set[int] = set()
+        self._choices: Mapping[int, Choice] = {}
+        self._materials: MaterialReader | None = None
+        stated: Mapping[int, Stated] = {}
+        try:
+            self._choices = material_and_profile_of(source)
+            self._materials = MaterialReader(source.file, units, settings)
+            stated = stated_by_profile(source.file, units)
+        except MALFORMED as error:
+            self._report_malformed(error)
+        self._sections = SectionReader(measures_of(units), stated)
         self._users: dict[Any, list[str]] = {}
         self._eccentric: dict[int, list[str]] = {}
 
@@ -61,10 +66,7 @@ class MemberProperties:
         """Return the properties of a curve member; None for what it does not state."""
         key = global_id(entity)
         choice = self._choices.get(entity.id(), NO_CHOICE)
-        material, findings = self._materials.read(choice.material)
-        for finding in findings:
-            self._users.setdefault(finding, []).append(key)
-        result = Properties(material=material, note=choice.note)
+        result = Properties(material=self._material(choice.material, key), note=choice.note)
         relations = self._profiles.get(entity.id(), ())
         if choice.profile is None and relations:
             return self._by_relation(entity, relations, result)
@@ -90,18 +92,30 @@ class MemberProperties:
                 members,
             )
 
+    def _material(self, entity: Any, key: str) -> Material | None:
+        if entity is None or self._materials is None:
+            return None
+        material, findings = self._materials.read(entity)
+        for finding in findings:
+            self._users.setdefault(finding, []).append(key)
+        return material
+
     def _section(self, profile: Any, key: str) -> Section | None:
         if profile is None:
             return None
-        if profile.id() not in self._seen:
-            self._seen.add(profile.id())
-            stated = stated_for(profile, self._units)
-            if stated is not None:
-                self._stated[profile.id()] = stated
         section = self._sections.section(profile)
         for finding in self._sections.findings(profile):
             self._users.setdefault(finding, []).append(key)
         return section
+
+    def _report_malformed(self, error: Exception) -> None:
+        self._notes.add(
+            "error",
+            "malformed-properties",
+            f"The materials and sections of the file could not be read: what describes them is "
+            f"not as the schema asks ({str(error).splitlines()[0][:120]}). Export the model "
+            f"again, or state them in the job file (materials, sections).",
+        )
 
     def _placed(self, result: Properties, point: int, key: str) -> Properties:
         section = result.section

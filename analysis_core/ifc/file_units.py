@@ -108,8 +108,9 @@ class FileUnits:
     def findings(self) -> tuple[Finding, ...]:
         """Return a finding for each kind that was used without being assigned.
 
-        None where no unit is assigned at all (``read_units`` says that), and none for angles:
-        every program takes an angle without a unit in radians.
+        None where no unit is assigned at all (``read_units`` says that), none for angles (every
+        program takes an angle without a unit in radians), and none where the assigned units lead
+        to the SI unit anyway.
         """
         if not self._factors:
             return ()
@@ -120,20 +121,25 @@ class FileUnits:
                 f"'{self._file_name}' assigns no unit of {_kind_name(kind)} ({kind}); values were "
                 f"taken as {_basis_text(basis)}. Assign the unit in the project if that is wrong.",
             )
-            for kind, (_, basis) in sorted(self._assumed.items())
-            if kind != "PLANEANGLEUNIT"
+            for kind, (factor, basis) in sorted(self._assumed.items())
+            if kind != "PLANEANGLEUNIT" and (basis == "SI" or factor != 1.0)
         )
 
     def _assume(self, kind: str) -> float:
         if kind not in self._assumed:
             parts = KINDS[kind][2] if kind in KINDS else ()
-            known = bool(parts) and all(self._has_basis(part) for part, _ in parts)
-            if known:
-                factor = math.prod(self._quiet(part) ** power for part, power in parts)
-                self._assumed[kind] = (factor, " and ".join(_kind_name(p) for p, _ in parts))
+            if parts and all(self._has_basis(part) for part, _ in parts):
+                names = " and ".join(dict.fromkeys(map(_kind_name, self._basis(kind))))
+                self._assumed[kind] = (self._quiet(kind), names)
             else:
                 self._assumed[kind] = (1.0, "SI")
         return self._assumed[kind][0]
+
+    def _basis(self, kind: str) -> list[str]:
+        """Return the assigned kinds of which a kind is made."""
+        if kind in self._factors:
+            return [kind]
+        return [base for part, _ in KINDS[kind][2] for base in self._basis(part)]
 
     def _has_basis(self, kind: str) -> bool:
         if kind in self._factors:

@@ -60,6 +60,8 @@ def take_census(blanked: bytes) -> Census:
         kinds = _KIND[marks]
         counts = _attribute_counts(chunk, kinds, done)
         names = _CLASS_NAME.findall(chunk)
+        if len(names) != counts.size:
+            raise _nameless(chunk, done)
         hashes = np.flatnonzero(kinds == _HASH)
         defines = np.zeros(hashes.size, bool)
         defines[:1] = hashes[:1] == 0
@@ -115,6 +117,14 @@ def _attribute_counts(chunk: bytes, kinds: Bytes, done: int) -> Ints:
     empty = (kinds[ends - 1] == _CLOSE) & (kinds[ends - 2] == _OPEN) & (commas == 0)
     attributes: Ints = commas + 1 - empty
     return attributes
+
+
+def _nameless(chunk: bytes, done: int) -> GrammarError:
+    """Return the error for the first statement whose class name is no plain word."""
+    for number, statement in enumerate(chunk.split(b";")):
+        if len(_CLASS_NAME.findall(statement)) != 1:
+            return GrammarError("its class is not a plain name", done + number)
+    return GrammarError("a class is not a plain name", done)
 
 
 def _first(positions: Ints) -> int:
