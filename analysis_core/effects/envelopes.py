@@ -9,10 +9,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.arrangements import Arrangements, SpanCases
-from analysis_core.effects.extremes import Peaks, largest
+from analysis_core.effects.extremes import Peaks
 from analysis_core.effects.factors import FactorTable, factor_table
-from analysis_core.effects.fields import Fields, fields, sample
-from analysis_core.effects.sampling import both, sampled
+from analysis_core.effects.fields import fields
+from analysis_core.effects.sampling import both
+from analysis_core.effects.sweep import Swept, sweep
 from analysis_core.model import Combination, Line
 from analysis_core.results import (
     Extreme,
@@ -23,9 +24,6 @@ from analysis_core.results import (
 )
 
 Floats = NDArray[np.float64]
-
-_SAMPLES = 9  # per segment, where a member has several
-_NOTHING = 1e-12  # of the largest value on the member: less than this is rounding
 
 
 def envelope(
@@ -72,10 +70,10 @@ def envelopes(
     for table, members in _alike(lines, chosen, arrangements):
         batch = [lines[i].line for i in members]
         ordered = [_ordered(solutions[i], lines[i].cases) for i in members]
-        by_line = _member_envelopes(batch, ordered, [lines[i] for i in members], table, count)
-        for i, solution, found in zip(members, ordered, by_line, strict=True):
-            own = replace(table, parts=lines[i].parts)
-            out[i] = LineEnvelope(limit_state, found, _reactions(solution, own))
+        by_member = _member_envelopes(batch, ordered, table, count)
+        by_joint = _reactions(batch, ordered, table)
+        for i, found, reactions in zip(members, by_member, by_joint, strict=True):
+            out[i] = LineEnvelope(limit_state, found, reactions)
     return [envelope for envelope in out if envelope is not None]
 
 
@@ -91,7 +89,7 @@ def _alike(
     tables: dict[object, tuple[FactorTable, list[int]]] = {}
     for i, line in enumerate(lines):
         numbers = span_numbers(line.line)
-        key = (numbers, tuple((p.case, p.span, bool(p.place)) for p in line.parts))
+        key = (numbers, tuple((p.case, p.span, p.place) for p in line.parts))
         if key not in tables:
             table = factor_table(combinations, line.parts, arrangements, numbers)
             tables[key] = table, []
@@ -120,62 +118,39 @@ def _ordered(solution: LineSolution, cases: Sequence[str]) -> LineSolution:
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class _Effect:
-    """One effect of a block: envelope at the stations (G, B) and the peaks both ways."""
+class _Named:
+    """One effect of a block: envelope at the stations (B, G) and the extremes both ways."""
 
     top: Floats
     bottom: Floats
-    highest: Peaks
-    lowest: Peaks
+    highest: list[Extreme]
+    lowest: list[Extreme]
 
 
 def _member_envelopes(
-    lines: Sequence[Line],
-    solutions: Sequence[LineSolution],
-    spans: Sequence[SpanCases],
-    table: FactorTable,
-    count: int,
+    lines: Sequence[Line], solutions: Sequence[LineSolution], table: FactorTable, count: int
 ) -> list[tuple[MemberEnvelope, ...]]:
     out: list[list[MemberEnvelope | None]] = [[None] * len(line.members) for line in lines]
     for block in fields(lines, solutions):
         x = np.linspace(0.0, 1.0, count)[:, None] * block.length
-        moment = _effect(block, block.moment, table, x)
-        shear = _effect(block, block.shear, table, x)
-        deflection = _effect(block, block.deflection, table, x)
-        x = x.T.copy()
-        for b, (i, m) in enumerate(zip(block.line, block.member, strict=True)):
-            own = replace(table, parts=spans[i].parts)
-            out[i][m] = _member(int(m), b, x[b], moment, shear, deflection, own)
+        swept = sweep(block, table, count)
+        moment, shear, deflection = (
+            _named(effect, table) for effect in (swept.moment, swept.shear, swept.deflection)
+        )
+        places = _settled(x)
+        numbers = zip(block.line.tolist(), block.member.tolist(), strict=True)
+        for b, (i, m) in enumerate(numbers):
+            out[i][m] = _member(m, b, places[b], moment, shear, deflection)
     return [tuple(m for m in members if m is not None) for members in out]
 
 
-def _effect(block: Fields, polynomials: Floats, table: FactorTable, x: Floats) -> _Effect:
-    single = polynomials.shape[1] == 1 and len(x) >= _SAMPLES
-    samples = len(x) if single else _SAMPLES
-    taken = sampled(polynomials, table, samples)
-    highest = largest(polynomials, block.cuts, table, taken.highest, samples)
-    # The least value is the largest of the negative: the same factors lead to it.
-    lowest = largest(-polynomials, block.cuts, table, -taken.lowest, samples)
-    lowest = replace(lowest, value=-lowest.value, contributions=-lowest.contributions)
-    if single:
-        top, bottom = taken.top[:, 0], taken.bottom[:, 0]
-    else:
-        top, bottom = _at_stations(block, polynomials, table, x)
-    nothing = _NOTHING * np.maximum(np.abs(highest.value), np.abs(lowest.value))
-    for values in (top, bottom, highest.value, lowest.value):
-        values[np.abs(values) <= nothing] = 0.0
-    return _Effect(_settled(top), _settled(bottom), highest, lowest)
-
-
-def _at_stations(
-    block: Fields, polynomials: Floats, table: FactorTable, x: Floats
-) -> tuple[Floats, Floats]:
-    """Where a station lies at a cut, both sides count."""
-    right, left = (sample(polynomials, block.cuts, x, left=side) for side in (False, True))
-    high, low = both(np.concatenate([right, left]), table)
-    top, bottom = np.max(high, axis=1), np.min(low, axis=1)
-    half = len(x)
-    return np.maximum(top[:half], top[half:]), np.minimum(bottom[:half], bottom[half:])
+def _named(swept: Swept, table: FactorTable) -> _Named:
+    return _Named(
+        top=_settled(swept.top),
+        bottom=_settled(swept.bottom),
+        highest=_extremes(swept.highest, table, largest=True),
+        lowest=_extremes(swept.lowest, table, largest=False),
+    )
 
 
 def _settled(values: Floats) -> Floats:
@@ -186,23 +161,17 @@ def _settled(values: Floats) -> Floats:
 
 
 def _member(
-    number: int,
-    b: int,
-    x: Floats,
-    moment: _Effect,
-    shear: _Effect,
-    deflection: _Effect,
-    table: FactorTable,
+    number: int, b: int, x: Floats, moment: _Named, shear: _Named, deflection: _Named
 ) -> MemberEnvelope:
     tops, bottoms = moment.top[b], moment.bottom[b]
     return MemberEnvelope(
         member=number,
-        sagging=_extreme(moment.highest, b, table, largest=True),
-        hogging=_extreme(moment.lowest, b, table, largest=False),
-        shear_max=_extreme(shear.highest, b, table, largest=True),
-        shear_min=_extreme(shear.lowest, b, table, largest=False),
-        deflection_down=_extreme(deflection.highest, b, table, largest=True),
-        deflection_up=_extreme(deflection.lowest, b, table, largest=False),
+        sagging=moment.highest[b],
+        hogging=moment.lowest[b],
+        shear_max=shear.highest[b],
+        shear_min=shear.lowest[b],
+        deflection_down=deflection.highest[b],
+        deflection_up=deflection.lowest[b],
         start_moment=(float(bottoms[0]), float(tops[0])),
         end_moment=(float(bottoms[-1]), float(tops[-1])),
         x=x,
@@ -215,23 +184,33 @@ def _member(
     )
 
 
-def _extreme(peaks: Peaks, b: int, table: FactorTable, *, largest: bool) -> Extreme:
-    source = table.source(int(peaks.row[b]), peaks.contributions[:, b], largest=largest)
-    return Extreme(float(peaks.value[b]), float(peaks.x[b]), source)
+def _extremes(peaks: Peaks, table: FactorTable, *, largest: bool) -> list[Extreme]:
+    sources = table.sources(peaks.row, peaks.contributions, largest=largest)
+    return list(map(Extreme, peaks.value.tolist(), peaks.x.tolist(), sources))
 
 
-def _reactions(solution: LineSolution, table: FactorTable) -> tuple[ReactionEnvelope, ...]:
-    out = []
-    values = np.moveaxis(solution.reactions, 0, 1)  # (J, C, 3)
-    high, low = both(values, table)  # (J, N, 3)
-    for joint in solution.line.joints:
-        if joint.support is None:
-            continue
-        found = []
-        for d in (1, 0, 2):
-            for largest_, rows in ((True, high[joint.id, :, d]), (False, low[joint.id, :, d])):
-                row = int(np.argmax(rows) if largest_ else np.argmin(rows))
-                source = table.source(row, values[joint.id, :, d], largest=largest_)
-                found.append(Extreme(float(rows[row]), joint.x, source))
-        out.append(ReactionEnvelope(joint.id, *found))
-    return tuple(out)
+def _reactions(
+    lines: Sequence[Line], solutions: Sequence[LineSolution], table: FactorTable
+) -> list[tuple[ReactionEnvelope, ...]]:
+    values = np.concatenate([s.reactions for s in solutions], axis=1)
+    joints = [joint for line in lines for joint in line.joints]
+    chosen = [j for j, joint in enumerate(joints) if joint.support is not None]
+    flat = values[:, chosen][..., [1, 0, 2]].reshape(len(values), -1)  # (C, joints * 3)
+    high, low = both(flat[None], table)
+    extremes = []
+    for rows, pick in ((high[0], np.argmax), (low[0], np.argmin)):
+        row = pick(rows, axis=0)
+        found = np.take_along_axis(rows, row[None], 0)[0]
+        x = np.repeat([joints[j].x for j in chosen], 3)
+        extremes.append(_extremes(Peaks(found, x, row, flat), table, largest=pick is np.argmax))
+    top, bottom = extremes
+    envelopes_ = iter(
+        ReactionEnvelope(
+            joints[j].id, *(e for d in range(3) for e in (top[3 * i + d], bottom[3 * i + d]))
+        )
+        for i, j in enumerate(chosen)
+    )
+    return [
+        tuple(next(envelopes_) for joint in line.joints if joint.support is not None)
+        for line in lines
+    ]

@@ -1,14 +1,13 @@
 """The largest value of an effect over the length of a member and over all rows of factors.
 
 Effects are polynomials along segments, so the largest value lies at an end of a segment or at a
-root of the derivative; it is found there, not on a grid.  The grid only tells which segments and
-rows can hold it: between two stations a distance h apart, no polynomial exceeds the larger of its
-values there by more than h²/8 times its largest second derivative.
+root of the derivative; it is found there, not on a grid.  The grid of ``survey`` only tells which
+stretches can hold it.
 
 Where parts may be on or off, the largest effect at a place is the sum of the adverse parts, and
-along the member it is smooth between the places where a part changes sign.  On an interval where
-no part does (its Bernstein coefficients have one sign) the same holds as before; an interval where
-one does is halved until none is left that could hold the largest value.
+along the member it is smooth between the places where a part changes sign.  On a stretch where no
+part does (its Bernstein coefficients have one sign) the same holds as before; a stretch where one
+does is halved until none is left that could hold the largest value.
 """
 
 from __future__ import annotations
@@ -20,11 +19,11 @@ from numpy.typing import NDArray
 
 from analysis_core.effects.factors import FactorTable
 from analysis_core.effects.polynomials import bernstein, evaluate, largest_between, restricted
+from analysis_core.effects.survey import EQUAL, Stretches
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 
-_EQUAL = 1e-12  # of the largest value on the member: closer values count as the same
 _HALVINGS = 60  # the margin falls by four with each: far more than ever needed
 
 
@@ -41,20 +40,18 @@ class Peaks:
     contributions: Floats
 
 
-def largest(
-    coefficients: Floats, cuts: Floats, table: FactorTable, sampled: Floats, samples: int
-) -> Peaks:
+def largest(coefficients: Floats, cuts: Floats, table: FactorTable, stretches: Stretches) -> Peaks:
     """Return the largest value over each member and all rows of the table.
 
-    ``coefficients`` (P, K, C, B) of an effect, ``cuts`` (K+1, B); ``sampled`` (K, N, B) is the
-    largest of ``samples`` equally spaced values of each row on each segment, ends included.
-    Of equal values the first row counts, then the leftmost place.
+    ``coefficients`` (P, K, C, B) of an effect, ``cuts`` (K+1, B); ``stretches`` are those that can
+    hold it.  Of equal values the first row counts, then the leftmost place.
     """
+    by_part = np.ascontiguousarray(coefficients.transpose(1, 3, 0, 2))  # (K, B, P, C)
     find = _fixed if table.fixed else _varied
-    found = find(coefficients, table, sampled, 1.0 / (samples - 1))
-    row, segment, t, value = _first(found, sampled.shape[2])
+    found = find(by_part, table, stretches)
+    row, segment, t, value = _first(found, coefficients.shape[3])
     members = np.arange(coefficients.shape[3])
-    chosen = coefficients.transpose(0, 1, 3, 2)[:, segment, members]  # (P, B, C)
+    chosen = by_part[segment, members].swapaxes(0, 1)  # (P, B, C)
     return Peaks(
         value=value,
         x=cuts[segment, members] + t * np.diff(cuts, axis=0)[segment, members],
@@ -74,69 +71,79 @@ class _Found:
     value: Floats
 
 
-def _fixed(coefficients: Floats, table: FactorTable, sampled: Floats, step: float) -> _Found:
+def _fixed(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
     """Each row is one polynomial per segment."""
-    margin = _bound(table.high, _bend(coefficients), step)
-    segment, row, member = _candidates(sampled, margin)
-    chosen = coefficients.transpose(0, 1, 3, 2)[:, segment, member]  # (P, n, C)
-    total = _weighted(chosen, table.high[row])
-    zero, one = np.zeros(len(row)), np.ones(len(row))
-    value, t = largest_between(total, zero, one)
-    return _Found(member, row, segment, t, value)
+    chosen = by_part[s.segment, s.member].swapaxes(0, 1)  # (P, n, C)
+    value, t = largest_between(_weighted(chosen, table.high[s.row]), s.low, s.high)
+    return _Found(s.member, s.row, s.segment, t, value)
 
 
-def _varied(coefficients: Floats, table: FactorTable, sampled: Floats, step: float) -> _Found:
-    """Each row is the sum of the adverse parts, on ever smaller intervals."""
-    bend = _bend(coefficients)
-    weight = np.maximum(np.abs(table.low), np.abs(table.high))
-    margin = _bound(weight, bend, 1.0)
-    segment, row, member = _candidates(sampled, margin * step * step)
-    best = np.max(sampled, axis=(0, 1))
-    scale = np.max(np.abs(sampled), axis=(0, 1))
-    count = round(1.0 / step)
-    low = np.repeat(np.arange(count) * step, len(row))
-    low, high = low, np.minimum(low + step, 1.0)
-    segment, row, member = (np.tile(index, count) for index in (segment, row, member))
+def _varied(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
+    """Each row is the sum of the adverse parts, on ever smaller stretches."""
+    size = by_part.shape[1]
+    best, scale = np.full(size, -np.inf), np.zeros(size)
     pieces: list[_Found] = []
     for _ in range(_HALVINGS):
-        chosen = coefficients.transpose(0, 1, 3, 2)[:, segment, member]  # (P, n, C)
-        lows, highs = table.low[row], table.high[row]
-        at_low, at_high = (_adverse(chosen, lows, highs, t) for t in (low, high))
-        pieces += [
-            _Found(member, row, segment, low, at_low),
-            _Found(member, row, segment, high, at_high),
-        ]
-        np.maximum.at(best, member, np.maximum(at_low, at_high))
-        reach = np.maximum(at_low, at_high) + margin[segment, row, member] * (high - low) ** 2
-        open_ = reach > best[member] - _EQUAL * scale[member]
-        open_ &= (high - low) ** 2 * margin[segment, row, member] > _EQUAL * scale[member]
-        if not open_.any():
+        chosen = by_part[s.segment, s.member].swapaxes(0, 1)  # (P, n, C)
+        lows, highs = table.low[s.row], table.high[s.row]
+        at_low, at_high = (evaluate(chosen, t[:, None]) for t in (s.low, s.high))
+        values = [_adverse(effects, lows, highs) for effects in (at_low, at_high)]
+        for t, value in zip((s.low, s.high), values, strict=True):
+            pieces.append(_Found(s.member, s.row, s.segment, t, value))
+            np.maximum.at(best, s.member, value)
+            np.maximum.at(scale, s.member, np.abs(value))
+        local = restricted(chosen, s.low[:, None], s.high[:, None])
+        margin = _margin(local, lows, highs)
+        reach = np.maximum(*values) + margin
+        goes_on = reach >= best[s.member] - EQUAL * scale[s.member]
+        goes_on &= margin > EQUAL * scale[s.member]
+        if not goes_on.any():
             break
-        segment, row, member, low, high = (a[open_] for a in (segment, row, member, low, high))
-        local = restricted(chosen[:, open_], low[:, None], high[:, None])
-        lows, highs = lows[open_], highs[open_]
+        s, local, lows, highs = _only(s, goes_on), local[:, goes_on], lows[goes_on], highs[goes_on]
         sign, settled = _signs(local, lows, highs)
         factors = np.where(sign > 0.0, highs, lows)[settled]
-        value, u = largest_between(
-            _weighted(local[:, settled], factors),
-            np.zeros(len(factors)),
-            np.ones(len(factors)),
-        )
-        a, b = low[settled], high[settled]
+        zero = np.zeros(len(factors))
+        value, u = largest_between(_weighted(local[:, settled], factors), zero, zero + 1.0)
+        done = _only(s, settled)
         pieces.append(
-            _Found(member[settled], row[settled], segment[settled], a + u * (b - a), value)
+            _Found(
+                done.member, done.row, done.segment, done.low + u * (done.high - done.low), value
+            )
         )
-        np.maximum.at(best, member[settled], value)
-        rest = ~settled
-        low, high, middle = low[rest], high[rest], 0.5 * (low[rest] + high[rest])
-        low, high = np.concatenate([low, middle]), np.concatenate([middle, high])
-        segment, row, member = (np.tile(i[rest], 2) for i in (segment, row, member))
+        np.maximum.at(best, done.member, value)
+        s = _halved(_only(s, ~settled))
     return _Found(
         *(
             np.concatenate([getattr(piece, name) for piece in pieces])
             for name in ("member", "row", "segment", "t", "value")
         )
     )
+
+
+def _only(s: Stretches, chosen: NDArray[np.bool_]) -> Stretches:
+    return Stretches(
+        s.member[chosen], s.row[chosen], s.segment[chosen], s.low[chosen], s.high[chosen]
+    )
+
+
+def _halved(s: Stretches) -> Stretches:
+    middle = 0.5 * (s.low + s.high)
+    return Stretches(
+        np.tile(s.member, 2),
+        np.tile(s.row, 2),
+        np.tile(s.segment, 2),
+        np.concatenate([s.low, middle]),
+        np.concatenate([middle, s.high]),
+    )
+
+
+def _margin(local: Floats, low: Floats, high: Floats) -> Floats:
+    """How far each row may exceed its values at the ends of its stretch (n)."""
+    if len(local) < 3:
+        return np.zeros(local.shape[1])
+    powers = np.arange(len(local), dtype=np.float64)
+    bend = np.sum(np.abs(local) * (powers * (powers - 1.0)).reshape(-1, 1, 1), axis=0)
+    return np.asarray(np.sum(bend * np.maximum(np.abs(low), np.abs(high)), axis=1) / 8.0)
 
 
 def _signs(local: Floats, low: Floats, high: Floats) -> tuple[Floats, NDArray[np.bool_]]:
@@ -147,8 +154,7 @@ def _signs(local: Floats, low: Floats, high: Floats) -> tuple[Floats, NDArray[np
     return np.sum(enclosing, axis=0), np.all(one_sign | (low == high), axis=1)
 
 
-def _adverse(chosen: Floats, low: Floats, high: Floats, t: Floats) -> Floats:
-    effects = evaluate(chosen, t[:, None])
+def _adverse(effects: Floats, low: Floats, high: Floats) -> Floats:
     return np.asarray(np.sum(np.maximum(low * effects, high * effects), axis=1))
 
 
@@ -157,36 +163,13 @@ def _weighted(chosen: Floats, factors: Floats) -> Floats:
     return np.asarray(np.sum(chosen * factors, axis=2))
 
 
-def _bend(coefficients: Floats) -> Floats:
-    """A bound of the second derivative by t over each segment: (K, C, B)."""
-    powers = np.arange(len(coefficients), dtype=np.float64)
-    factors = (powers * (powers - 1.0)).reshape(-1, 1, 1, 1)
-    return np.asarray(np.sum(np.abs(coefficients) * factors, axis=0))
-
-
-def _bound(weight: Floats, bend: Floats, step: float) -> Floats:
-    """How far each row may exceed two neighbouring samples: (K, N, B)."""
-    out = np.zeros((bend.shape[0], weight.shape[0], bend.shape[2]))
-    for c in range(bend.shape[1]):
-        out += np.abs(weight[:, c])[:, None] * bend[:, c, None]
-    return np.asarray(out * (step * step / 8.0))
-
-
-def _candidates(sampled: Floats, margin: Floats) -> tuple[Integers, Integers, Integers]:
-    """Segments, rows and members that can hold the largest value of their member."""
-    best = np.max(sampled, axis=(0, 1))
-    scale = np.max(np.abs(sampled), axis=(0, 1))
-    segment, row, member = np.nonzero(sampled + margin >= best - _EQUAL * scale)
-    return segment, row, member
-
-
 def _first(found: _Found, size: int) -> tuple[Integers, Integers, Floats, Floats]:
     """Of each member's candidates the largest; of equal ones the first row, leftmost."""
     top = np.full(size, -np.inf)
     np.maximum.at(top, found.member, found.value)
     scale = np.zeros(size)
     np.maximum.at(scale, found.member, np.abs(found.value))
-    good = found.value >= (top - _EQUAL * scale)[found.member]
+    good = found.value >= (top - EQUAL * scale)[found.member]
     member, row, segment, t, value = (
         getattr(found, name)[good] for name in ("member", "row", "segment", "t", "value")
     )

@@ -18,6 +18,7 @@ from analysis_core.effects.arrangements import Arrangements, Part, PatternRule, 
 from analysis_core.model import Combination
 
 Floats = NDArray[np.float64]
+Integers = NDArray[np.int64]
 _NO_MATTER = 1e-9  # a part that contributes less than this of an effect is not named
 
 
@@ -41,29 +42,38 @@ class FactorTable:
         """Whether no row leaves a choice."""
         return bool(np.array_equal(self.low, self.high))
 
-    def chosen(self, row: int, contributions: Floats, *, largest: bool) -> Floats:
-        """Return the factors that give the largest (or least) effect: (C)."""
-        upward = contributions > 0.0 if largest else contributions < 0.0
-        return np.asarray(np.where(upward, self.high[row], self.low[row]))
+    def sources(self, rows: Integers, contributions: Floats, *, largest: bool) -> list[str]:
+        """Return what governs each of B extremes: "U2 (Q on spans 1, 3)".
 
-    def source(self, row: int, contributions: Floats, *, largest: bool) -> str:
-        """Return what governs: "U2 (Q on spans 1, 3)".
-
-        ``contributions`` (C) are the effects of the parts, unfactored, at the place of the extreme.
+        ``rows`` (B) of the table; ``contributions`` (C, B) are the unfactored effects of the parts
+        at the place of the extreme, which is the ``largest`` value or the least.
         """
-        notes = [self.labels[row]] if self.labels[row] else []
-        if not np.array_equal(self.low[row], self.high[row]):
-            factors = self.chosen(row, contributions, largest=largest)
-            weight = np.abs(contributions) * np.maximum(np.abs(self.low), np.abs(self.high))[row]
-            matters = weight > _NO_MATTER * np.sum(weight)
-            notes += self._arrangement(row, factors, matters)
-        return f"{self.names[row]} ({'; '.join(notes)})" if notes else self.names[row]
+        named = zip(self.names, self.labels, strict=True)
+        plain = [f"{name} ({label})" if label else name for name, label in named]
+        if self.fixed:
+            return [plain[row] for row in rows]
+        low, high, stated = (t[rows].T for t in (self.low, self.high, self.stated))
+        upward = contributions > 0.0 if largest else contributions < 0.0
+        weight = np.abs(contributions) * np.maximum(np.abs(low), np.abs(high))
+        matters = weight > _NO_MATTER * np.sum(weight, axis=0)
+        full = (np.where(upward, high, low) == stated) & matters
+        coded = np.ascontiguousarray(np.packbits(np.concatenate([full, matters]), axis=0).T)
+        known: dict[tuple[int, bytes], str] = {}
+        out = []
+        for b, row in enumerate(rows.tolist()):
+            key = row, coded[b].tobytes()
+            if key not in known:
+                notes = [self.labels[row]] if self.labels[row] else []
+                notes += self._notes(row, full[:, b], matters[:, b])
+                known[key] = f"{self.names[row]} ({'; '.join(notes)})" if notes else plain[row]
+            out.append(known[key])
+        return out
 
-    def _arrangement(self, row: int, factors: Floats, matters: NDArray[np.bool_]) -> list[str]:
+    def _notes(self, row: int, full: NDArray[np.bool_], matters: NDArray[np.bool_]) -> list[str]:
         notes = []
         for case, group in itertools.groupby(range(len(self.parts)), lambda c: self.parts[c].case):
             own = [c for c in group if self.low[row, c] != self.high[row, c]]
-            on = [c for c in own if factors[c] == self.stated[row, c] and matters[c]]
+            on = [c for c in own if full[c]]
             if any(matters[c] for c in own) and not (len(own) == 1 and on):
                 notes.append(_note(case, self.parts, own, on, self._rest(row, own)))
         return notes

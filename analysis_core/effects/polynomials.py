@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 Floats = NDArray[np.float64]
 
 _STEPS = 80  # bisection alone halves an interval to one rounding unit in 53
+_CLOSE = 1e-11  # a step of Newton's that small leaves far less
 
 
 def evaluate(coefficients: Floats, t: Floats | float) -> Floats:
@@ -134,16 +135,20 @@ def _bracketed(coefficients: Floats, edges: Floats) -> Floats:
     low, high = edges[:-1][where], edges[1:][where]
     low_negative = np.signbit(values[:-1][where])
     x = 0.5 * (low + high)
+    open_ = np.arange(len(x))
     for _ in range(_STEPS):
-        value = evaluate(chosen, x)
+        value = evaluate(chosen, x[open_])
+        at = x[open_]
         on_low_side = np.signbit(value) == low_negative
-        low, high = np.where(on_low_side, x, low), np.where(on_low_side, high, x)
+        low, high = np.where(on_low_side, at, low), np.where(on_low_side, high, at)
         with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
-            step = x - value / evaluate(slope, x)
-        moved = np.where((step > low) & (step < high), step, 0.5 * (low + high))
-        done = np.abs(moved - x) <= 4e-16 * np.abs(x) + 1e-300
-        x = moved
-        if done.all():
+            step = at - value / evaluate(slope, at)
+        moved = np.where((step >= low) & (step <= high), step, 0.5 * (low + high))
+        x[open_] = moved
+        going = np.abs(moved - at) > _CLOSE * (1.0 + np.abs(at))
+        if not going.any():
             break
+        open_, low, high, low_negative = (a[going] for a in (open_, low, high, low_negative))
+        chosen, slope = chosen[:, going], slope[:, going]
     out[where] = x
     return out

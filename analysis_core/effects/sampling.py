@@ -1,55 +1,99 @@
-"""Largest and least values of every row of factors at equally spaced places of each segment.
+"""Values of polynomials at equally spaced places along each segment, a few places at a time.
 
-Only running extremes are kept, never the whole field: the places are taken a few at a time, as
-many as stay in the processor's cache.
+The places lie symmetrically about the middle of the segment, so the even and the odd part of a
+polynomial there serve two places each.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+import math
+from collections.abc import Iterator
 
 import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.factors import FactorTable
-from analysis_core.effects.polynomials import evaluate
+from analysis_core.effects.polynomials import restricted
 
 Floats = NDArray[np.float64]
 
-_NUMBERS = 65_536  # doubles at a time
+NUMBERS = 20_480  # doubles in one working array, so that a few of them stay in the cache
 
 
-@dataclass(frozen=True, slots=True, eq=False)
-class Sampled:
-    """Over the places: highest, lowest (K, N, B).  Over the rows: top, bottom (S, K, B)."""
+class Workspace:
+    """Arrays that are used again, since fetching fresh memory costs as much as filling it."""
 
-    highest: Floats
-    lowest: Floats
-    top: Floats
-    bottom: Floats
+    def __init__(self) -> None:
+        self._arrays: dict[str, Floats] = {}
+
+    def array(self, name: str, shape: tuple[int, ...]) -> Floats:
+        """Return an array of any content; the previous one of that name is given up."""
+        size = math.prod(shape)
+        found = self._arrays.get(name)
+        if found is None or found.size < size:
+            found = self._arrays[name] = np.empty(size)
+        return found[:size].reshape(shape)
 
 
-def sampled(coefficients: Floats, table: FactorTable, samples: int) -> Sampled:
-    """Return the extremes of polynomials (P, K, C, B) at ``samples`` places from t = 0 to 1."""
-    _, segments, _, size = coefficients.shape
-    rows = len(table.names)
-    polynomials = _combined(coefficients, table.high) if table.fixed else coefficients
-    out = Sampled(
-        highest=np.full((segments, rows, size), -np.inf),
-        lowest=np.full((segments, rows, size), np.inf),
-        top=np.empty((samples, segments, size)),
-        bottom=np.empty((samples, segments, size)),
-    )
-    places = np.linspace(0.0, 1.0, samples)
-    step = max(1, _NUMBERS // (segments * max(rows, polynomials.shape[2]) * size))
-    for first in range(0, samples, step):
-        now = slice(first, first + step)
-        t = places[now].reshape(-1, 1, 1, 1)
-        values = evaluate(polynomials[:, None], t)  # (s, K, N or C, B)
-        high, low = (values, values) if table.fixed else both(values, table)
-        np.maximum(out.highest, np.max(high, axis=0), out=out.highest)
-        np.minimum(out.lowest, np.min(low, axis=0), out=out.lowest)
-        out.top[now], out.bottom[now] = np.max(high, axis=2), np.min(low, axis=2)
+def centred(coefficients: Floats) -> Floats:
+    """Return polynomials of t from 0 to 1 as polynomials of u from -1 to 1."""
+    return restricted(coefficients, 0.5, 1.0)
+
+
+def at_places(
+    polynomials: Floats, samples: int, workspace: Workspace
+) -> Iterator[tuple[slice, Floats]]:
+    """Yield runs of places with the values (K, N, S, B) there of polynomials (P, K, N, B).
+
+    The polynomials are centred, the places run from u = -1 to 1.  The array is used again for the
+    next run.
+    """
+    local = polynomials[:, :, :, None]
+    nearest = 0.0 if samples % 2 else 1.0 / (samples - 1)
+    distance = np.linspace(nearest, 1.0, (samples + 1) // 2)
+    step = max(1, NUMBERS // max(1, polynomials[0].size))
+    kind, size = polynomials.shape[1:3], polynomials.shape[3]
+    half = samples // 2
+    for first in range(0, len(distance), step):
+        u = distance[first : first + step, None]
+        shape = (*kind, len(u), size)
+        e, o, a = (workspace.array(name, shape) for name in ("even", "odd", "above"))
+        _horner(local[0::2], u * u, e)
+        if len(local) == 1:
+            o[...] = 0.0
+        else:
+            _horner(local[1::2], u * u, o)
+            o *= u
+        np.add(e, o, out=a)
+        yield slice(half + first, half + first + len(u)), a
+        np.subtract(e, o, out=e)
+        last = samples - 1 - half - first
+        # The mirrored places run the other way.
+        yield slice(last, last - len(u) if last >= len(u) else None, -1), e
+
+
+def _horner(coefficients: Floats, x: Floats, out: Floats) -> None:
+    if len(coefficients) == 1:
+        out[...] = coefficients[0]
+        return
+    np.multiply(coefficients[-1], x, out=out)
+    out += coefficients[-2]
+    for coefficient in coefficients[-3::-1]:
+        out *= x
+        out += coefficient
+
+
+def combined(coefficients: Floats, factors: Floats, workspace: Workspace) -> Floats:
+    """Superpose (P, K, C, B) by factors (N, C): (P, K, N, B), in the order of the parts."""
+    degree, segments, count, size = coefficients.shape
+    out = workspace.array("combined", (degree, segments, len(factors), size))
+    out[...] = 0.0
+    term = workspace.array("term", out.shape[1:])
+    for c in range(count):
+        if factors[:, c].any():
+            for p in range(degree):
+                np.multiply(factors[:, c, None], coefficients[p, :, c, None], out=term)
+                out[p] += term
     return out
 
 
@@ -91,13 +135,3 @@ def _total(values: Floats, columns: list[int]) -> Floats:
     for c in columns[1:]:
         total = total + values[..., c, :]
     return total
-
-
-def _combined(coefficients: Floats, factors: Floats) -> Floats:
-    """Superpose (P, K, C, B) by factors (N, C): (P, K, N, B), in the order of the parts."""
-    degree, segments, _, size = coefficients.shape
-    out = np.zeros((degree, segments, len(factors), size))
-    for n, row in enumerate(factors):
-        for c in np.flatnonzero(row):
-            out[:, :, n] += row[c] * coefficients[:, :, c]
-    return out

@@ -38,19 +38,8 @@ class Row:
     actions: tuple[MemberAction, ...]
     cuts: tuple[float, ...]
     parts: tuple[Part, ...]
-
-    @property
-    def shape(self) -> tuple[int, int, int, int]:
-        """Segments and number of coefficients: of the load, of 1/EI and of 1/GA."""
-        load = max(
-            (len(a.transverse) for a in self.actions if isinstance(a, DistributedForce)), default=1
-        )
-        return (
-            len(self.cuts) - 1,
-            max(load, 1),
-            max(len(part.bending) for part in self.parts),
-            max(len(part.shear) for part in self.parts),
-        )
+    shape: tuple[int, int, int, int]
+    """Number of segments, and of coefficients: of the load, of 1/EI and of 1/GA."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -77,13 +66,22 @@ def rows(lines: Sequence[Line]) -> list[Row]:
     out = []
     for index, line in enumerate(lines):
         by_member: list[list[MemberAction]] = [[] for _ in line.members]
+        degrees = [1] * len(line.members)
         for action in line.actions:
-            if isinstance(action, DistributedForce | PointForce | PointMoment | ImposedCurvature):
+            if isinstance(action, DistributedForce):
                 by_member[action.member].append(action)
-        for member, actions in zip(line.members, by_member, strict=True):
+                degrees[action.member] = max(degrees[action.member], len(action.transverse))
+            elif isinstance(action, PointForce | PointMoment | ImposedCurvature):
+                by_member[action.member].append(action)
+        for member, actions, degree in zip(line.members, by_member, degrees, strict=True):
             own = parts(member)
             cuts = _cuts(member.length, own, actions)
-            out.append(Row(index, member, tuple(actions), cuts, own))
+            bend, shear = (
+                max(len(values) for values in each)
+                for each in ([p.bending for p in own], [p.shear for p in own])
+            )
+            shape = len(cuts) - 1, degree, bend, shear
+            out.append(Row(index, member, tuple(actions), cuts, own, shape))
     return out
 
 
@@ -151,6 +149,10 @@ def _flexibility(out: Block, b: int, row: Row) -> None:
 def _action(out: Block, b: int, row: Row, action: MemberAction, c: int) -> None:
     own = len(row.cuts) - 1
     if isinstance(action, DistributedForce):
+        whole = action.end - action.start > 0.5 * row.cuts[-1]
+        if own == 1 and len(action.transverse) == 1 and whole:
+            out.load[0, 0, c, b] += action.transverse[0]
+            return
         first, last = _segment(row, action.start), _segment(row, action.end)
         for k in range(first, last):
             low, width = row.cuts[k], row.cuts[k + 1] - row.cuts[k]

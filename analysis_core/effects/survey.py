@@ -1,0 +1,247 @@
+"""Envelope at stations, and where along which row of factors the extremes of a member can lie.
+
+Between two places a distance h apart no polynomial exceeds the larger of its values there by more
+than h²/8 times its largest second derivative: rows that stay below the best by more than that are
+out, whatever they do between the places.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from analysis_core.effects.factors import FactorTable
+from analysis_core.effects.polynomials import derivative, evaluate
+from analysis_core.effects.sampling import NUMBERS, Workspace, at_places, both, centred, combined
+
+Floats = NDArray[np.float64]
+Integers = NDArray[np.int64]
+
+EQUAL = 1e-12  # of the largest value on the member: closer values count as the same
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Stretches:
+    """Stretches of segments, from t = low to high, that can hold an extreme; all (n)."""
+
+    member: Integers
+    row: Integers
+    segment: Integers
+    low: Floats
+    high: Floats
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Survey:
+    """Envelope at S places of each segment (S, K, B) and the stretches for both extremes."""
+
+    top: Floats
+    bottom: Floats
+    highest: Stretches
+    lowest: Stretches
+
+
+def survey(coefficients: Floats, table: FactorTable, samples: int) -> Survey:
+    """Survey polynomials (P, K, C, B) of the parts at ``samples`` places per segment."""
+    _, segments, count, size = coefficients.shape
+    rows = len(table.names)
+    top, bottom = (np.empty((samples, segments, size)) for _ in range(2))
+    found: tuple[list[Stretches], list[Stretches]] = ([], [])
+    width = max(32, NUMBERS // (segments * max(rows, count)))
+    workspace = Workspace()
+    look = _fixed if table.fixed else _varied
+    for first in range(0, size, width):
+        now = slice(first, first + width)
+        local = centred(coefficients[..., now])
+        for into, stretches in zip(
+            found, look(local, table, top[..., now], bottom[..., now], workspace), strict=True
+        ):
+            into.append(_moved(stretches, first))
+    return Survey(top, bottom, _joined(found[0]), _joined(found[1]))
+
+
+def _fixed(
+    local: Floats, table: FactorTable, top: Floats, bottom: Floats, workspace: Workspace
+) -> tuple[Stretches, Stretches]:
+    """Each row is one polynomial per segment."""
+    polynomials = combined(local, table.high, workspace)
+    curved = len(polynomials) > 3
+    if curved:
+        over, under = _margins(polynomials, len(top))
+        highest, lowest = _nothing(polynomials)
+    for places, values in at_places(polynomials, len(top), workspace):
+        top[places] = np.maximum.reduce(values, axis=1).swapaxes(0, 1)
+        bottom[places] = np.minimum.reduce(values, axis=1).swapaxes(0, 1)
+        if curved:
+            _inner(values, places, len(top), 3.0 * over, 3.0 * under, highest, lowest)
+    scale = np.maximum(np.abs(top), np.abs(bottom)).max(axis=(0, 1))
+    if not curved:
+        high, low = _closed(polynomials)
+        return _first_to_reach(high, scale), _first_to_reach(-low, scale)
+    return (
+        _pruned(polynomials, highest + over, over, top, scale),
+        _pruned(-polynomials, under - lowest, under, -bottom, scale),
+    )
+
+
+def _inner(
+    values: Floats,
+    places: slice,
+    samples: int,
+    over: Floats,
+    under: Floats,
+    highest: Floats,
+    lowest: Floats,
+) -> None:
+    """Update the extremes of each row over the places between the ends.
+
+    Beside an end a row may exceed the end by up to four margins less the fall, elsewhere by one.
+    """
+    for j, place in enumerate(range(samples)[places]):
+        if place in (0, samples - 1):
+            continue
+        value = values[:, :, j]
+        if place in (1, samples - 2):
+            np.maximum(highest, value + over, out=highest)
+            np.minimum(lowest, value - under, out=lowest)
+        else:
+            np.maximum(highest, value, out=highest)
+            np.minimum(lowest, value, out=lowest)
+
+
+def _pruned(
+    polynomials: Floats, reach: Floats, margin: Floats, top: Floats, scale: Floats
+) -> Stretches:
+    """Stretches between places of the rows that may hold the largest value.
+
+    Of rows that reach it at an end of a segment, where many may meet at a support, the first.
+    """
+    best = top.max(axis=(0, 1)) - EQUAL * scale
+    may = reach >= best
+    ends = np.max(_at_ends(polynomials), axis=0)
+    first = np.argmax(np.any(ends >= best, axis=0), axis=0)
+    members = np.arange(len(best))
+    may[:, first, members] |= ends[:, first, members] >= best
+    segment, row, member = np.nonzero(may)
+    samples = len(top)
+    u = np.linspace(-1.0, 1.0, samples)[:, None]
+    values = evaluate(polynomials[:, None, segment, row, member], u)
+    rise = np.abs(np.diff(values, axis=0))
+    over = np.maximum(0.0, 4.0 * margin[segment, row, member] - rise) ** 2
+    with np.errstate(divide="ignore", invalid="ignore"):
+        over = np.where(over > 0.0, over / (16.0 * margin[segment, row, member]), 0.0)
+    place, chosen = np.nonzero(np.maximum(values[:-1], values[1:]) + over >= best[member])
+    step = 1.0 / (samples - 1)
+    return Stretches(member[chosen], row[chosen], segment[chosen], place * step, (place + 1) * step)
+
+
+def _at_ends(polynomials: Floats) -> Floats:
+    even, odd = (np.add.reduce(polynomials[i::2], axis=0) for i in (0, 1))
+    return np.stack([even - odd, even + odd])
+
+
+def _varied(
+    local: Floats, table: FactorTable, top: Floats, bottom: Floats, workspace: Workspace
+) -> tuple[Stretches, Stretches]:
+    """Each row is the sum of its adverse parts; a stretch lies between two places."""
+    samples, rows = len(top), len(table.names)
+    shape = (samples, local.shape[1], rows, local.shape[3])
+    high, low = np.empty(shape), np.empty(shape)
+    for places, values in at_places(local, samples, workspace):
+        high[places], low[places] = both(np.moveaxis(values, 2, 0), table)
+    np.max(high, axis=2, out=top)
+    np.min(low, axis=2, out=bottom)
+    scale = np.maximum(np.abs(top), np.abs(bottom)).max(axis=(0, 1))
+    over, under = _varied_margins(local, table, samples)
+    np.negative(low, out=low)
+    return _between(high, over, scale), _between(low, under, scale)
+
+
+def _varied_margins(local: Floats, table: FactorTable, samples: int) -> tuple[Floats, Floats]:
+    over, under = (np.zeros((local.shape[1], len(table.names), local.shape[3])) for _ in range(2))
+    if len(local) < 3:
+        return over, under
+    for c in range(local.shape[2]):
+        part_over, part_under = _margins(local[:, :, c, None], samples)
+        plus = np.maximum(table.high[:, c, None], 0.0)
+        minus = np.maximum(-table.low[:, c, None], 0.0)
+        over += np.maximum(plus * part_over, minus * part_under)
+        under += np.maximum(plus * part_under, minus * part_over)
+    return over, under
+
+
+def _first_to_reach(reached: Floats, scale: Floats) -> Stretches:
+    """The first row that reaches the largest value (K, N, B), and in it the first segment."""
+    good = reached >= reached.max(axis=(0, 1)) - EQUAL * scale
+    member = np.arange(len(scale))
+    row = np.argmax(np.any(good, axis=0), axis=0)
+    segment = np.argmax(good[:, row, member], axis=0)
+    return Stretches(member, row, segment, np.zeros(len(row)), np.ones(len(row)))
+
+
+def _between(values: Floats, margin: Floats, scale: Floats) -> Stretches:
+    """Stretches between places (S, K, N, B) whose reach is not below what is reached elsewhere."""
+    best = values.max(axis=(0, 1, 2)) - EQUAL * scale
+    within = values + margin >= best
+    place, segment, row, member = np.nonzero(within[:-1] | within[1:])
+    step = 1.0 / (len(values) - 1)
+    return Stretches(member, row, segment, place * step, (place + 1) * step)
+
+
+def _closed(polynomials: Floats) -> tuple[Floats, Floats]:
+    """Largest and least value (K, N, B) of polynomials up to the second degree, u from -1 to 1."""
+    constant = polynomials[0]
+    slope = np.abs(polynomials[1]) if len(polynomials) > 1 else np.zeros_like(constant)
+    if len(polynomials) < 3:
+        return constant + slope, constant - slope
+    bow = polynomials[2]
+    ends = constant + bow
+    high, low = ends + slope, ends - slope
+    inside = slope < 2.0 * np.abs(bow)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        turning = constant - slope * slope / (4.0 * bow)
+    np.copyto(high, turning, where=inside & (bow < 0.0))
+    np.copyto(low, turning, where=inside & (bow > 0.0))
+    return high, low
+
+
+def _nothing(polynomials: Floats) -> tuple[Floats, Floats]:
+    return np.full(polynomials.shape[1:], -np.inf), np.full(polynomials.shape[1:], np.inf)
+
+
+def _margins(polynomials: Floats, samples: int) -> tuple[Floats, Floats]:
+    """How far polynomials may rise over, and fall under, two neighbouring places.
+
+    Only a second derivative below zero lifts them over the chord, one above zero under it.
+    """
+    second = derivative(derivative(polynomials))
+    if len(second) <= 3:
+        high, low = _closed(second)
+    else:
+        high = np.add.reduce(np.abs(second), axis=0)
+        low = -high
+    share = (2.0 / (samples - 1)) ** 2 / 8.0
+    return np.maximum(-low, 0.0) * share, np.maximum(high, 0.0) * share
+
+
+def _moved(stretches: Stretches, first: int) -> Stretches:
+    return Stretches(
+        stretches.member + first,
+        stretches.row,
+        stretches.segment,
+        stretches.low,
+        stretches.high,
+    )
+
+
+def _joined(pieces: list[Stretches]) -> Stretches:
+    if len(pieces) == 1:
+        return pieces[0]
+    return Stretches(
+        *(
+            np.concatenate([getattr(piece, name) for piece in pieces])
+            for name in ("member", "row", "segment", "low", "high")
+        )
+    )
