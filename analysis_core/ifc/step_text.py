@@ -122,7 +122,16 @@ def _sections(data: bytes, blanked: Blanked, name: str) -> tuple[int, list[Span]
             header_end = match.end()
         inside = word in (b"HEADER", b"DATA")
         expected = (b"ENDSEC",) if inside else (b"DATA", b"END-ISO-10303-21")
+    if start >= 0:
+        _check_last_statement(data, blanked, start, name)
     raise IfcReadError(_broken_off(data, blanked, expected, name))
+
+
+def _check_last_statement(data: bytes, blanked: Blanked, start: int, name: str) -> None:
+    """Say where a section goes wrong whose end no semicolon comes before."""
+    end = re.compile(rb"\bENDSEC\s*;").search(blanked.text, start)
+    if end is not None:
+        _joined(data, blanked, [(start, end.start())], name)
 
 
 def _broken_off(data: bytes, blanked: Blanked, expected: tuple[bytes, ...], name: str) -> str:
