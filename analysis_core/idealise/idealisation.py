@@ -6,6 +6,7 @@ from analysis_core.building import AxisMember, Building, Carrier, Connection
 from analysis_core.idealise import analytical, meetings
 from analysis_core.idealise.actions import put_axis_actions, put_node_actions
 from analysis_core.idealise.analytical import analytical_scheme
+from analysis_core.idealise.area_loads import put_area_loads
 from analysis_core.idealise.build import build
 from analysis_core.idealise.cases import canonical, cases_of, combinations_of, with_used
 from analysis_core.idealise.draft import Draft
@@ -66,6 +67,7 @@ def idealise(building: Building, settings: Settings) -> LineModel:
         return canonical(name, cases)
 
     put_job_actions(building.members, placer, settings, chooser, table, case_name, log)
+    put_area_loads(building, placer, settings, chooser, case_name, log)
     things: list[AxisMember | Carrier | Connection] = [
         *building.carriers,
         *building.connections,

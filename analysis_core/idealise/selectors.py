@@ -5,11 +5,11 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping
 from fnmatch import fnmatchcase
 
-from analysis_core.building import AxisMember, Carrier, Connection
+from analysis_core.building import Area, AxisMember, Carrier, Connection
 from analysis_core.idealise.log import Log
 from analysis_core.settings import Selector
 
-Chosen = AxisMember | Carrier | Connection
+Chosen = AxisMember | Carrier | Connection | Area
 _CLASS_SUFFIX = "standardcase"
 
 
