@@ -78,8 +78,7 @@ class Receivers:
 
 def _of_bar(draft: Draft, number: int, beam: Beam) -> Receiver:
     bar = draft.bars[number]
-    a, b = (draft.joints[j] for j in (bar.start, bar.end))
-    p, q = draft.plane.world(a.x, a.z), draft.plane.world(b.x, b.z)
+    p, q = draft.point(bar.start), draft.point(bar.end)
     return Receiver(
         ((p[0], p[1]), (q[0], q[1])),
         min(p[2], q[2]) - beam.below,

@@ -20,15 +20,14 @@ from analysis_core.idealise.plan import (
     crossing,
     extent,
     gap_to,
-    inside,
     meeting,
 )
 from analysis_core.settings import Tolerances
 
-Kind = Literal["column", "wall", "footing", "beam below", "beam", "slab"]
+Kind = Literal["bearing", "column", "wall", "footing", "beam below", "beam", "slab"]
 # Which of several touching elements carries: the stiffest first (common practice).
 RANK: dict[Kind, int] = {
-    "column": 0, "wall": 1, "footing": 2, "beam below": 3, "beam": 4, "slab": 5,
+    "bearing": 0, "column": 1, "wall": 2, "footing": 3, "beam below": 4, "beam": 5, "slab": 6,
 }  # fmt: skip
 # A stretch of contact longer than this is a beam lying along what carries it (m).
 _ALONG = 1.0
@@ -103,13 +102,6 @@ class Surroundings:
                 found.extend(_on_beam(beam, other, self._tolerances))
         return sorted(found, key=lambda b: (b.along, RANK[b.kind], b.id))
 
-    def columns_at(self, spot: Spot, level: float) -> list[Carrier]:
-        """Return the columns whose outline holds a plan point near a level, by GlobalId."""
-        x, y = spot
-        box = (x, y, level - _LIFT, x, y, level + _LIFT)
-        near = self._carriers.near_box(box)
-        return [c for c in near if kind_of(c) == "column" and inside(c.corners, spot)]
-
 
 def kind_of(carrier: Carrier | AxisMember) -> Kind | None:
     """Return the kind of bearing that a class of element makes, None where it makes none."""
@@ -121,6 +113,7 @@ def kind_of(carrier: Carrier | AxisMember) -> Kind | None:
 
 
 _CLASSES: tuple[tuple[str, Kind], ...] = (
+    ("ifcbearing", "bearing"),
     ("column", "column"),
     ("pile", "column"),
     ("wall", "wall"),

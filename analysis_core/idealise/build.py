@@ -77,7 +77,7 @@ def _joint(draft: Draft, number: int) -> Joint:
         id=number,
         x=joint.x,
         z=joint.z,
-        point=draft.plane.world(joint.x, joint.z),
+        point=draft.point(number),
         support=joint.support,
         element=joint.element,
         elements=tuple(dict.fromkeys(joint.elements)),

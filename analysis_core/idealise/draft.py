@@ -10,7 +10,7 @@ from dataclasses import dataclass, field
 
 from analysis_core.building import AxisMember
 from analysis_core.idealise.planes import Plane
-from analysis_core.model import FREE, RIGID, Kind, Role, Support
+from analysis_core.model import FREE, RIGID, Kind, Point, Role, Support
 
 
 @dataclass(slots=True)
@@ -27,6 +27,8 @@ class DraftJoint:
     elements: list[str] = field(default_factory=list)
     reason: str = ""
     width: float = 0.0
+    point: Point | None = None
+    """Its place in the world where that is not the one of x and z (clear spans)."""
     settled: bool = False
     """Whether the job file states this support, so that nothing else decides it."""
 
@@ -83,6 +85,11 @@ class Draft:
         a, b = self.joints[bar.start], self.joints[bar.end]
         size = self.length(bar)
         return (b.x - a.x) / size, (b.z - a.z) / size
+
+    def point(self, number: int) -> Point:
+        """Return the world point of a joint."""
+        joint = self.joints[number]
+        return joint.point or self.plane.world(joint.x, joint.z)
 
     @property
     def joint_of(self) -> dict[str, int]:

@@ -9,6 +9,7 @@ from analysis_core.idealise.analytical import analytical_scheme
 from analysis_core.idealise.area_loads import put_area_loads
 from analysis_core.idealise.build import build
 from analysis_core.idealise.cases import canonical, cases_of, combinations_of, with_used
+from analysis_core.idealise.clear_spans import measure_clear
 from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.job_actions import put_job_actions
 from analysis_core.idealise.job_conditions import (
@@ -18,7 +19,7 @@ from analysis_core.idealise.job_conditions import (
 )
 from analysis_core.idealise.leaning import fault_leaning
 from analysis_core.idealise.log import Log
-from analysis_core.idealise.physical import physical_scheme, support_chains
+from analysis_core.idealise.physical import physical_scheme, put_legs, support_chains
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.properties import PropertyTable
 from analysis_core.idealise.scheme import Rest, Scheme, fault_fallen
@@ -47,6 +48,10 @@ def idealise(building: Building, settings: Settings) -> LineModel:
         put_job_supports(scheme.drafts, settings, chooser, log)
         support_chains(physical, settings, log)
         meetings.let_carry(physical, table, settings.tolerances, log)
+        if settings.analysis.spans == "face":
+            measure_clear(scheme.drafts, log)
+        if settings.analysis.columns_as_legs:
+            put_legs(physical, settings, table, log)
     else:
         scheme = analytical_scheme(building, settings, log)
         chooser.marks = _marks(scheme.drafts)
@@ -61,7 +66,7 @@ def idealise(building: Building, settings: Settings) -> LineModel:
     put_axis_actions(building, placer, members, log)
     put_node_actions(building, placer, scheme.carriers, log)
     put_temperature_actions(building, placer, members, table, log)
-    put_self_weight(weight, placer, table, log)
+    put_self_weight(weight, placer, set(members), table, log)
 
     def case_name(name: str) -> str:
         return canonical(name, cases)

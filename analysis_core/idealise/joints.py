@@ -65,9 +65,10 @@ def _split(draft: Draft, bar: Bar, share: float, key: str) -> int:
 def member_at(draft: Draft, distance: float) -> tuple[str, float]:
     """Return the member and its station at a distance along a line from its first joint."""
     covered = 0.0
-    for bar in draft.bars:
+    spans = [bar for bar in draft.bars if bar.role == "span"]
+    for bar in spans:
         size = draft.length(bar)
-        if distance <= covered + size or bar is draft.bars[-1]:
+        if distance <= covered + size or bar is spans[-1]:
             share = min(1.0, max(0.0, (distance - covered) / size))
             station = bar.station_start + share * (bar.station_end - bar.station_start)
             return bar.member.global_id, station

@@ -8,12 +8,14 @@ from dataclasses import dataclass
 
 from analysis_core.building import AxisMember, Building, Carrier
 from analysis_core.idealise.beams import Beam, beam_of
-from analysis_core.idealise.bearings import Bearing, Surroundings
+from analysis_core.idealise.bearings import Bearing, Surroundings, kind_of
 from analysis_core.idealise.chains import End, Link, chains, link_ends
 from analysis_core.idealise.draft import Draft, DraftJoint
+from analysis_core.idealise.legs import Legs
 from analysis_core.idealise.log import Log, listed, named
 from analysis_core.idealise.marks import put_marks
 from analysis_core.idealise.plan import Spot
+from analysis_core.idealise.properties import PropertyTable
 from analysis_core.idealise.scheme import Scheme
 from analysis_core.idealise.selectors import Chooser
 from analysis_core.idealise.spans import Chain, Seating, chain_of, draft_of, seat, seat_key
@@ -32,6 +34,7 @@ class PhysicalScheme:
     chains: list[Chain]
     bearings: Mapping[str, list[Bearing]]
     links: list[Link]
+    carriers: tuple[Carrier, ...] = ()
 
 
 def physical_scheme(
@@ -59,13 +62,21 @@ def physical_scheme(
     order = sorted(range(len(drafts)), key=lambda i: drafts[i].mark)
     drafts = [drafts[i] for i in order]
     found = [found[i] for i in order]
-    return PhysicalScheme(Scheme(drafts), found, bearings, links)
+    return PhysicalScheme(Scheme(drafts), found, bearings, links, (*building.carriers, *posts))
 
 
 def support_chains(physical: PhysicalScheme, settings: Settings, log: Log) -> None:
     """Put supports on the drafts as found around them, where the job file does not say more."""
     for draft, chain in zip(physical.scheme.drafts, physical.chains, strict=True):
         _support(draft, chain, settings, log)
+
+
+def put_legs(physical: PhysicalScheme, settings: Settings, table: PropertyTable, log: Log) -> None:
+    """Put columns on the lines that they hold, as legs."""
+    columns = [c for c in physical.carriers if kind_of(c) == "column"]
+    legs = Legs(columns, physical.scheme.drafts, settings, log)
+    for draft in physical.scheme.drafts:
+        legs.put(draft, table)
 
 
 def _sorted_out(

@@ -105,14 +105,17 @@ class Placer:
     ) -> None:
         """Put a force per metre of member, linear between two stations, onto its bars.
 
-        What lies beyond the bars (a member drawn past the axis of its last bearing) goes to the
-        bar's end as a point force, so that nothing of the total is lost.
+        What lies on no bar (a member drawn past the axis of its last bearing, or the width of a
+        bearing between clear spans) goes to the nearest bar's end as a point force, so that
+        nothing of the total is lost.
         """
         seats = self.seats(draft, member)
         start, end = stations
+        reached = start
         for index, seat in enumerate(seats):
-            low = start if index == 0 else max(start, seat.low)
-            high = end if index == len(seats) - 1 else min(end, seat.high)
+            last = index == len(seats) - 1
+            low, high = max(start, reached), end if last else min(end, seat.high)
+            reached = seat.high
             inner = max(low, seat.low), min(high, seat.high)
             for part in ((low, min(high, seat.low)), (max(low, seat.high), high)):
                 if part[1] - part[0] > _NEAR:

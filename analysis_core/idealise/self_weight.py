@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Sequence, Set
 
 from analysis_core.building import Building, LoadCase
 from analysis_core.idealise.draft import Draft
@@ -44,9 +44,16 @@ def weight_cases(building: Building, settings: Settings, log: Log) -> list[LoadC
 
 
 def put_self_weight(
-    cases: Sequence[LoadCase], placer: Placer, table: PropertyTable, log: Log
+    cases: Sequence[LoadCase],
+    placer: Placer,
+    own: Set[str],
+    table: PropertyTable,
+    log: Log,
 ) -> None:
-    """Put the weight of every member that lies in a line, over the whole of its bars."""
+    """Put the weight of every member that lies in a line, over the whole of its bars.
+
+    ``own``: the members of the building; columns that are legs do not hang on the line.
+    """
     if not cases:
         return
     missing: dict[str, list[str]] = {}
@@ -54,7 +61,7 @@ def put_self_weight(
     for draft in placer.drafts:
         for bar in draft.bars:
             member = bar.member
-            if member.global_id in done:
+            if member.global_id in done or member.global_id not in own:
                 continue
             done.add(member.global_id)
             weights = _weights(table.of(member))

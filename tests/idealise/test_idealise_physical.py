@@ -9,10 +9,11 @@ import pytest
 from building_makers import finding, only, shuffled, slugs, spans, turned
 from physical_makers import beam, block, column, house, wall
 
+from analysis_core import distribution
 from analysis_core.building import Building
 from analysis_core.idealise import idealise
-from analysis_core.model import Support
-from analysis_core.settings import Analysis, Settings
+from analysis_core.model import DistributedForce, PointForce, Support
+from analysis_core.settings import ActionSetting, Analysis, Selector, Settings
 
 Z = 3.0
 PIN = Support(vertical=math.inf)
@@ -219,3 +220,84 @@ def test_of_two_posts_side_by_side_one_is_the_bearing():
 
     assert spans(line) == [6.0]
     assert "also near: column 'thin'" in line.joints[0].reason
+
+
+def storeys_with_columns():
+    """A bay of 6 m; columns from 0 to the beam's underside at 2.8 and from its top 3.2 to 6.5."""
+    columns = []
+    for x in (0.0, 6.0):
+        columns += [column(f"L{x}", x, 0.0, 0.0, Z - 0.2), column(f"U{x}", x, 0.0, Z + 0.2, 6.5)]
+    return house([beam("B", (0.0, 0.0, Z), (6.0, 0.0, Z))], columns)
+
+
+def test_columns_become_legs_on_request():
+    settings = Settings(analysis=Analysis(columns_as_legs=True))
+    line = only(idealise(storeys_with_columns(), settings))
+    legs = [(m.element, m.role, round(m.length, 3)) for m in line.members[1:]]
+
+    assert line.kind == "line"
+    assert legs == [
+        ("L0.0", "leg", 3.0),
+        ("U0.0", "leg", 3.5),
+        ("L6.0", "leg", 3.0),
+        ("U6.0", "leg", 3.5),
+    ]
+    assert line.joints[2].support == Support(math.inf, math.inf, math.inf)
+    assert line.elements == ("B", "L0.0", "U0.0", "L6.0", "U6.0")
+
+
+@pytest.mark.parametrize(("far", "factor"), [("fixed", 4.0), ("pinned", 3.0)])
+def test_legs_restrain_the_beam_as_slope_deflection_says(far, factor):
+    """M = wL²/12 · K/(K + 2EI/L) for a symmetric bay, K = factor · EI (1/3.0 + 1/3.5)."""
+    settings = Settings(
+        analysis=Analysis(columns_as_legs=True, leg_far_end=far, self_weight=False),
+        actions=(ActionSetting("Q", Selector(name="B"), "uniform", (9e3,)),),
+    )
+    line = only(idealise(storeys_with_columns(), settings))
+    solution = distribution.solve(line, ["Q"])
+    columns = factor * (1.0 / 3.0 + 1.0 / 3.5)
+    expected = 9e3 * 36.0 / 12.0 * columns / (columns + 2.0 / 6.0)
+
+    assert solution.end_moments[0, 0] == pytest.approx((-expected, expected), rel=1e-9)
+    assert solution.reactions[0, 0, 1] == pytest.approx(27e3)
+
+
+def test_a_column_through_two_floors_is_a_leg_up_to_the_next_line():
+    columns = [column(f"C{x}", x, 0.0, 0.0, 7.0) for x in (0.0, 6.0)]
+    beams = [beam("B1", (0.0, 0.0, Z), (6.0, 0.0, Z)), beam("B2", (0.0, 0.0, 6.6), (6.0, 0.0, 6.6))]
+    found = idealise(house(beams, columns), Settings(analysis=Analysis(columns_as_legs=True)))
+    lengths = {
+        line.elements[0]: [round(m.length, 3) for m in line.members[1:3]] for line in found.lines
+    }
+
+    assert lengths == {"B1": [3.0, 3.6], "B2": [3.6, 3.6]}
+
+
+def test_clear_spans_run_from_face_to_face_and_keep_the_load():
+    settings = Settings(
+        analysis=Analysis(spans="face"),
+        actions=(ActionSetting("Q", Selector(), "uniform", (1e3,), start=0.0, end=3.0),),
+    )
+    found = idealise(row(), settings)
+    line = only(found)
+
+    assert spans(line) == [4.7, 5.9, 3.5]
+    assert line.joints[3].point == pytest.approx((15.0, 0.0, Z))
+    assert [m.element_offset for m in line.members] == pytest.approx([0.0, 0.0, 0.0])
+    assert "clear-spans" in slugs(found)
+
+
+def test_what_acts_over_a_bearing_goes_to_it():
+    """One beam over three columns, clear spans: 1 kN/m over 2 m, of which 0.3 m over the column."""
+    columns = [column(f"C{i}", x, 0.0, 0.0, Z - 0.2) for i, x in enumerate((0.0, 4.0, 9.0))]
+    building = house([beam("B", (0.0, 0.0, Z), (9.0, 0.0, Z))], columns)
+    action = ActionSetting("Q", Selector(), "uniform", (1e3,), start=3.0, end=5.0)
+    settings = Settings(analysis=Analysis(spans="face", self_weight=False), actions=(action,))
+    line = only(idealise(building, settings))
+
+    forces = [a for a in line.actions if isinstance(a, PointForce)]
+    spread = [a for a in line.actions if isinstance(a, DistributedForce)]
+    assert [(f.member, f.position, f.transverse) for f in forces] == [
+        (1, 0.0, pytest.approx(300.0))
+    ]
+    assert sum((a.end - a.start) * a.transverse[0] for a in spread) == pytest.approx(1700.0)
