@@ -10,12 +10,13 @@ from collections.abc import Iterable, Mapping
 from typing import Any
 
 from analysis_core.building import Building
-from analysis_core.ifc.analytical_actions import ActionReader, Target, chained
+from analysis_core.ifc.analytical_actions import ActionReader
 from analysis_core.ifc.analytical_conditions import ConditionReader
 from analysis_core.ifc.analytical_groups import UNASSIGNED, GroupReader
 from analysis_core.ifc.analytical_members import Local, MemberReader
 from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed, name_of, titled
 from analysis_core.ifc.analytical_properties import MemberProperties
+from analysis_core.ifc.analytical_targets import Target, chained
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.curves import Measures
 from analysis_core.ifc.frames import Frame

@@ -52,6 +52,7 @@ class ConditionReader:
         self._notes = notes
         self._unknown: dict[str, list[str]] = {}
         self._seen: set[str] = set()
+        self._lengths: list[str] = []
 
     def connections(self, entities: Any) -> dict[int, Node]:
         """Return the point connections by entity number."""
@@ -89,8 +90,42 @@ class ConditionReader:
                 self._report_twice(relation, attachment)
             else:
                 result[pair] = attachment
+        attached = list(result.values())
+        attached += self._by_place(members, nodes, attached)
         self._report_unknown()
-        return list(result.values())
+        self._report_lengths()
+        return attached
+
+    def _by_place(
+        self, members: Mapping[int, Local], nodes: Mapping[int, Node], attached: list[Attachment]
+    ) -> list[Attachment]:
+        """Attach connections that no relation names to the members that end where they are."""
+        related = {attachment.connection for attachment in attached}
+        loose = [n.connection for n in nodes.values() if n.connection.global_id not in related]
+        if not loose:
+            return []
+        ends: dict[tuple[int, int, int], list[tuple[Local, float]]] = {}
+        for local in members.values():
+            ends.setdefault(_cell(local.member.start), []).append((local, 0.0))
+            ends.setdefault(_cell(local.member.end), []).append((local, local.length))
+        result = []
+        for connection in loose:
+            for local, position in ends.get(_cell(connection.point), ()):
+                release = Restraint(axes=(local.x, local.y, local.z))
+                result.append(
+                    Attachment(local.member.global_id, connection.global_id, position, release)
+                )
+        if result:
+            names = list(dict.fromkeys(attachment.connection for attachment in result))
+            self._notes.add(
+                "warning",
+                "attachment-by-place",
+                f"{len(names)} connections ({listed(names)}) are related to no member; they were "
+                f"taken to join the members that end there, rigidly. Relate them by "
+                f"IfcRelConnectsStructuralMember.",
+                names,
+            )
+        return result
 
     def _node(self, entity: Any) -> Node | None:
         key = global_id(entity)
@@ -134,6 +169,8 @@ class ConditionReader:
             stated = self._restraint(relation[6], axes, relation, unknown=math.inf)
             release = stated if stated is not None else release
         self._report_additions(relation)
+        if relation[8] is not None:
+            self._lengths.append(global_id(relation))
         return Attachment(
             local.member.global_id, node.connection.global_id, position, release, apart
         )
@@ -237,6 +274,16 @@ class ConditionReader:
                 (global_id(relation), global_id(relation[4]), global_id(relation[5])),
             )
 
+    def _report_lengths(self) -> None:
+        if self._lengths:
+            self._notes.add(
+                "note",
+                "supported-length",
+                f"{len(self._lengths)} connections of members state a supported length "
+                f"({listed(self._lengths)}); members are taken to be held at a point.",
+                self._lengths,
+            )
+
     def _report_loose(self, relation: Any) -> None:
         self._notes.add(
             "warning",
@@ -274,3 +321,8 @@ class ConditionReader:
                 f"taken as {kind}. State every direction of the condition.",
                 unique,
             )
+
+
+def _cell(point: Vector) -> tuple[int, int, int]:
+    """Return the millimetre in which a point lies."""
+    return round(point[0] * 1e3), round(point[1] * 1e3), round(point[2] * 1e3)

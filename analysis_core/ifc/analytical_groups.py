@@ -120,15 +120,14 @@ class GroupReader:
             group.kind = order.get(stated, "group")
         self._cut_circles()
         for key, group in self._groups.items():
-            if group.kind != "group" or self._under_case(key):
+            if group.kind != "group" or not self._topmost(key):
                 continue
-            holds_actions = any(member in acting for member, _ in group.members)
-            holds_cases = any(
-                self._groups[member].kind in ("case", "combination")
-                for member, _ in group.members
-                if member in self._groups
-            )
-            if holds_actions:
+            below = self._all_below(key)
+            if any(self._groups[k].kind == "case" for k in below if k in self._groups):
+                # Only a load group has a factor; other groups are no combination.
+                if group.entity.is_a("IfcStructuralLoadGroup"):
+                    group.kind = "combination"
+            elif acting.intersection(below):
                 group.kind = "case"
                 self._notes.add(
                     "note",
@@ -137,8 +136,22 @@ class GroupReader:
                     f"taken as a load case of its own.",
                     (global_id(group.entity),),
                 )
-            elif holds_cases and group.entity.is_a("IfcStructuralLoadGroup"):
-                group.kind = "combination"
+
+    def _topmost(self, key: int) -> bool:
+        """Whether a group is part of no case and of no other group, but at most combined."""
+        parents = self._parents.get(key, ())
+        return all(self._groups[parent].kind == "combination" for parent in parents)
+
+    def _all_below(self, key: int) -> set[int]:
+        found: set[int] = set()
+        todo = [key]
+        while todo:
+            for member, _ in self._groups[todo.pop()].members:
+                if member not in found:
+                    found.add(member)
+                    if member in self._groups:
+                        todo.append(member)
+        return found
 
     def _cut_circles(self) -> None:
         """Drop the assignment that closes a circle of groups, with a finding."""
@@ -181,18 +194,6 @@ class GroupReader:
             f"assignment, of the first to the last, was passed over. Correct the grouping.",
             ids,
         )
-
-    def _under_case(self, key: int) -> bool:
-        todo, seen = list(self._parents.get(key, ())), set()
-        while todo:
-            here = todo.pop()
-            if here in seen:
-                continue
-            seen.add(here)
-            if self._groups[here].kind == "case":
-                return True
-            todo += self._parents.get(here, ())
-        return False
 
     def _below(self, key: int, acting: set[int]) -> list[tuple[int, float]]:
         """Return the actions below a case, with the product of all factors on the way."""

@@ -51,7 +51,18 @@ class Load:
         return not any(any(v) for v in (*self.forces, *self.moments))
 
     def over(self, begin: float, end: float) -> Load:
-        """Return the load on a member, for an extent from ``begin`` to ``end``, m."""
+        """Return the load on a member, for an extent from ``begin`` to ``end``, m.
+
+        Where ``begin`` is the larger, the load runs against the member.
+        """
+        if begin > end:
+            own = self.over(0.0, begin - end)
+            return replace(
+                own,
+                forces=own.forces[::-1],
+                moments=own.moments[::-1],
+                stations=tuple(begin - station for station in (own.stations or ())[::-1]),
+            )
         if self.stations is not None:
             return replace(self, stations=tuple(begin + station for station in self.stations))
         forces, moments = self.forces, self.moments
@@ -147,8 +158,10 @@ def _configuration(load: Any, distribution: str, units: FileUnits) -> Load:
 def _spacing_note(count: int, distribution: str) -> str:
     if count == 1:
         return "" if distribution == "CONST" else "it states one value; taken as constant"
-    if count == 2 or distribution == "EQUIDISTANT":
+    if count == 2:
         return ""
+    if distribution == "EQUIDISTANT":
+        return "its values are taken as straight between evenly spaced places"
     return f"its {count} values have no locations; taken as evenly spaced"
 
 
