@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.effects.arrangements import Arrangements, SpanCases
+from analysis_core.effects.arrangements import Arrangements, Part, SpanCases
 from analysis_core.effects.extremes import Peaks
 from analysis_core.effects.factors import FactorTable, factor_table
 from analysis_core.effects.fields import fields
@@ -68,7 +68,7 @@ def envelopes(
     arrangements = arrangements or Arrangements()
     out: list[LineEnvelope | None] = [None] * len(lines)
     for table, members in _alike(lines, chosen, arrangements):
-        batch = [lines[i].line for i in members]
+        batch = [lines[i] for i in members]
         ordered = [_ordered(solutions[i], lines[i].cases) for i in members]
         by_member = _member_envelopes(batch, ordered, table, count)
         by_joint = _reactions(batch, ordered, table)
@@ -88,8 +88,9 @@ def _alike(
     """Lines whose parts take the same factors, so that one table serves them all."""
     tables: dict[object, tuple[FactorTable, list[int]]] = {}
     for i, line in enumerate(lines):
-        numbers = span_numbers(line.line)
-        key = (numbers, tuple((p.case, p.span, p.place) for p in line.parts))
+        numbers = span_numbers(line.line) if arrangements.listed else ()
+        spans = [p.span for p in line.parts] if arrangements.listed else ()
+        key = (numbers, tuple(spans), tuple((p.case, bool(p.place)) for p in line.parts))
         if key not in tables:
             table = factor_table(combinations, line.parts, arrangements, numbers)
             tables[key] = table, []
@@ -128,28 +129,33 @@ class _Named:
 
 
 def _member_envelopes(
-    lines: Sequence[Line], solutions: Sequence[LineSolution], table: FactorTable, count: int
+    batch: Sequence[SpanCases],
+    solutions: Sequence[LineSolution],
+    table: FactorTable,
+    count: int,
 ) -> list[tuple[MemberEnvelope, ...]]:
+    lines = [spans.line for spans in batch]
     out: list[list[MemberEnvelope | None]] = [[None] * len(line.members) for line in lines]
     for block in fields(lines, solutions):
-        x = np.linspace(0.0, 1.0, count)[:, None] * block.length
         swept = sweep(block, table, count)
+        of_lines = block.line.tolist()
+        parts = [batch[i].parts for i in of_lines]
         moment, shear, deflection = (
-            _named(effect, table) for effect in (swept.moment, swept.shear, swept.deflection)
+            _named(effect, table, parts) for effect in (swept.moment, swept.shear, swept.deflection)
         )
-        places = _settled(x)
-        numbers = zip(block.line.tolist(), block.member.tolist(), strict=True)
+        places = _settled(np.linspace(0.0, 1.0, count)[:, None] * block.length)
+        numbers = zip(of_lines, block.member.tolist(), strict=True)
         for b, (i, m) in enumerate(numbers):
             out[i][m] = _member(m, b, places[b], moment, shear, deflection)
     return [tuple(m for m in members if m is not None) for members in out]
 
 
-def _named(swept: Swept, table: FactorTable) -> _Named:
+def _named(swept: Swept, table: FactorTable, parts: Sequence[tuple[Part, ...]]) -> _Named:
     return _Named(
         top=_settled(swept.top),
         bottom=_settled(swept.bottom),
-        highest=_extremes(swept.highest, table, largest=True),
-        lowest=_extremes(swept.lowest, table, largest=False),
+        highest=_extremes(swept.highest, table, parts, largest=True),
+        lowest=_extremes(swept.lowest, table, parts, largest=False),
     )
 
 
@@ -184,33 +190,37 @@ def _member(
     )
 
 
-def _extremes(peaks: Peaks, table: FactorTable, *, largest: bool) -> list[Extreme]:
-    sources = table.sources(peaks.row, peaks.contributions, largest=largest)
+def _extremes(
+    peaks: Peaks, table: FactorTable, parts: Sequence[tuple[Part, ...]], *, largest: bool
+) -> list[Extreme]:
+    sources = table.sources(peaks.row, peaks.contributions, parts, largest=largest)
     return list(map(Extreme, peaks.value.tolist(), peaks.x.tolist(), sources))
 
 
 def _reactions(
-    lines: Sequence[Line], solutions: Sequence[LineSolution], table: FactorTable
+    batch: Sequence[SpanCases], solutions: Sequence[LineSolution], table: FactorTable
 ) -> list[tuple[ReactionEnvelope, ...]]:
     values = np.concatenate([s.reactions for s in solutions], axis=1)
-    joints = [joint for line in lines for joint in line.joints]
-    chosen = [j for j, joint in enumerate(joints) if joint.support is not None]
+    joints = [(joint, spans.parts) for spans in batch for joint in spans.line.joints]
+    chosen = [j for j, (joint, _) in enumerate(joints) if joint.support is not None]
     flat = values[:, chosen][..., [1, 0, 2]].reshape(len(values), -1)  # (C, joints * 3)
+    x = np.repeat([joints[j][0].x for j in chosen], 3)
+    parts = [joints[j][1] for j in chosen for _ in range(3)]
     high, low = both(flat[None], table)
     extremes = []
     for rows, pick in ((high[0], np.argmax), (low[0], np.argmin)):
         row = pick(rows, axis=0)
         found = np.take_along_axis(rows, row[None], 0)[0]
-        x = np.repeat([joints[j].x for j in chosen], 3)
-        extremes.append(_extremes(Peaks(found, x, row, flat), table, largest=pick is np.argmax))
+        peaks = Peaks(found, x, row, flat)
+        extremes.append(_extremes(peaks, table, parts, largest=pick is np.argmax))
     top, bottom = extremes
-    envelopes_ = iter(
+    made = iter(
         ReactionEnvelope(
-            joints[j].id, *(e for d in range(3) for e in (top[3 * i + d], bottom[3 * i + d]))
+            joints[j][0].id, *(e for d in range(3) for e in (top[3 * i + d], bottom[3 * i + d]))
         )
         for i, j in enumerate(chosen)
     )
     return [
-        tuple(next(envelopes_) for joint in line.joints if joint.support is not None)
-        for line in lines
+        tuple(next(made) for joint in spans.line.joints if joint.support is not None)
+        for spans in batch
     ]

@@ -42,11 +42,19 @@ class FactorTable:
         """Whether no row leaves a choice."""
         return bool(np.array_equal(self.low, self.high))
 
-    def sources(self, rows: Integers, contributions: Floats, *, largest: bool) -> list[str]:
+    def sources(
+        self,
+        rows: Integers,
+        contributions: Floats,
+        parts: Sequence[tuple[Part, ...]],
+        *,
+        largest: bool,
+    ) -> list[str]:
         """Return what governs each of B extremes: "U2 (Q on spans 1, 3)".
 
         ``rows`` (B) of the table; ``contributions`` (C, B) are the unfactored effects of the parts
-        at the place of the extreme, which is the ``largest`` value or the least.
+        at the place of the extreme, which is the ``largest`` value or the least.  ``parts`` (B) are
+        the parts of the line that each belongs to; the table serves lines alike.
         """
         named = zip(self.names, self.labels, strict=True)
         plain = [f"{name} ({label})" if label else name for name, label in named]
@@ -58,24 +66,32 @@ class FactorTable:
         matters = weight > _NO_MATTER * np.sum(weight, axis=0)
         full = (np.where(upward, high, low) == stated) & matters
         coded = np.ascontiguousarray(np.packbits(np.concatenate([full, matters]), axis=0).T)
-        known: dict[tuple[int, bytes], str] = {}
+        known: dict[tuple[int, bytes, int], str] = {}
         out = []
         for b, row in enumerate(rows.tolist()):
-            key = row, coded[b].tobytes()
+            key = row, coded[b].tobytes(), id(parts[b])
             if key not in known:
                 notes = [self.labels[row]] if self.labels[row] else []
-                notes += self._notes(row, full[:, b], matters[:, b])
+                notes += self._notes(row, full[:, b], matters[:, b], parts[b])
                 known[key] = f"{self.names[row]} ({'; '.join(notes)})" if notes else plain[row]
             out.append(known[key])
         return out
 
-    def _notes(self, row: int, full: NDArray[np.bool_], matters: NDArray[np.bool_]) -> list[str]:
+    def _notes(
+        self,
+        row: int,
+        full: NDArray[np.bool_],
+        matters: NDArray[np.bool_],
+        parts: tuple[Part, ...],
+    ) -> list[str]:
         notes = []
-        for case, group in itertools.groupby(range(len(self.parts)), lambda c: self.parts[c].case):
+        for case, group in itertools.groupby(range(len(parts)), lambda c: parts[c].case):
             own = [c for c in group if self.low[row, c] != self.high[row, c]]
             on = [c for c in own if full[c]]
             if any(matters[c] for c in own) and not (len(own) == 1 and on):
-                notes.append(_note(case, self.parts, own, on, self._rest(row, own)))
+                loaded = [parts[c] for c in on]
+                everywhere = len(on) == len(own)
+                notes.append(_note(case, loaded, everywhere, self._rest(row, own)))
         return notes
 
     def _rest(self, row: int, own: Sequence[int]) -> float:
@@ -185,19 +201,17 @@ def _share(part: Part, loaded: frozenset[int] | None, elsewhere: float) -> float
     return 1.0 if part.span is None or part.span in loaded else elsewhere
 
 
-def _note(
-    case: str, parts: Sequence[Part], own: Sequence[int], on: Sequence[int], rest: float
-) -> str:
-    if len(on) == len(own):
+def _note(case: str, loaded: Sequence[Part], everywhere: bool, rest: float) -> str:
+    if everywhere:
         return f"{case} on all spans"
-    if not on:
-        return f"without {case}" if not rest else f"{rest:g} of {case} on all spans"
-    places = [parts[c].place for c in on]
-    spans = [parts[c].span for c in on]
-    if all(places[i] == f"span {spans[i]}" for i in range(len(on))):
-        text = f"{case} on {_spans([s for s in spans if s is not None])}"
-    else:
-        text = f"{case} on {', '.join(places)}"
+    if not loaded:
+        return f"without {case}" if not rest else f"{rest:.3g} of {case} on all spans"
+    own = [p.span for p in loaded if p.span is not None and p.place == f"span {p.span}"]
+    others = [p.place for p in loaded if p.place != f"span {p.span}"]
+    where = [_spans(own)] if own else []
+    if others:
+        where.append(", ".join(others))
+    text = f"{case} on {' and '.join(where)}"
     return f"{text}, {rest:.3g} of it elsewhere" if rest else text
 
 
