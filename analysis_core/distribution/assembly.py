@@ -12,7 +12,6 @@ from analysis_core.distribution.loads import Loads, gather, holds
 from analysis_core.distribution.mechanisms import refuse_idle_couples
 from analysis_core.distribution.recover import MemberForces, Movements, member_forces, movements
 from analysis_core.distribution.sway import balance
-from analysis_core.distribution.tails import take_off
 from analysis_core.distribution.verify import (
     continuity_residual,
     joint_residual,
@@ -35,8 +34,7 @@ def solve_any(line: Line, cases: Sequence[str]) -> LineSolution:
     refuse_idle_couples(line, cases)
     loads = gather(line, cases)
     balanced = balance(line, loads)
-    tails = take_off(line, balanced.reduction, loads)
-    found = forces(line, loads, balanced, tails.axial)
+    found = forces(line, loads, balanced)
     ends = member_forces(line, loads, balanced, found)
     moved = movements(line, loads, balanced, ends.moments)
     reactions = np.zeros((len(line.joints), 3, len(cases)))

@@ -35,9 +35,10 @@ class Forces:
     reactions: Floats
 
 
-def forces(line: Line, loads: Loads, balanced: Balanced, tail_axial: Floats) -> Forces:
+def forces(line: Line, loads: Loads, balanced: Balanced) -> Forces:
     """Return shears and axial forces of all bars and the reactions of all supports."""
     shears = bar_shears(balanced)
+    tail_axial = balanced.frame.tails.axial
     count = len(balanced.reduction.bars)
     pushes = np.array(balanced.forces[:, :2])
     for index, bar in enumerate(balanced.bars[:count]):
@@ -116,7 +117,7 @@ def _spread_along(line: Line, balanced: Balanced, pushes: Floats, reactions: Flo
         moved[free] = np.linalg.solve(stiffness[np.ix_(free, free)], load[free])
     left = stiffness @ moved - load
     for (joint, direction), index in place.items():
-        if (joint, direction) in held and (joint, direction) not in balanced.translations.anchors:
+        if (joint, direction) in held and (joint, direction) not in balanced.frame.moves.anchors:
             reactions[joint, direction] += left[index] if direction == 0 else -left[index]
     return _bar_forces(balanced, place, moved)
 
@@ -131,7 +132,7 @@ def _held(line: Line, balanced: Balanced) -> set[tuple[int, int]]:
             for direction, key in enumerate(("horizontal", "vertical"))
             if stiffness[key] == RIGID
         }
-    return held | set(balanced.translations.anchors)
+    return held | set(balanced.frame.moves.anchors)
 
 
 def _bar_forces(balanced: Balanced, place: dict[tuple[int, int], int], moved: Floats) -> Floats:
