@@ -68,7 +68,7 @@ make_venv() {
   elif python=$(find_python venv pip); then
     # No ensurepip (Debian keeps it in python3-venv): the Python's own pip fills the venv.
     "$python" -m venv --without-pip "$VENV"
-    "$python" -m pip --python "$VENV/bin/python" install -q pip setuptools
+    "$python" -m pip --python "$VENV/bin/python" install -qq pip setuptools
   else
     find_python >/dev/null ||
       stop "no Python 3.11 or later was found (looked for ${PYTHONS[*]}). Install one and run this again."
@@ -89,7 +89,7 @@ install_project() {
     return 0
   fi
   say "Installing Spanledger and its packages into $VENV (pip)"
-  "$VENV/bin/python" -m pip install -q -e ".[$extras]" ||
+  "$VENV/bin/python" -m pip install -qq -e ".[$extras]" ||
     stop "pip could not install the project (see above). Check the connection and run this again."
   printf '%s\n' "$wanted" >"$stamp"
 }

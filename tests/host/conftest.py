@@ -44,11 +44,18 @@ def in_freecad(tmp_path, request):
             pytest.fail(f"FreeCAD is required (SPANLEDGER_REQUIRE_HOST=1), but {reason}")
 
     def play(
-        scene: str, *, timeout: float = 120.0, scale: str = "1", window: bool = True, **environment
+        scene: str,
+        *,
+        timeout: float = 120.0,
+        scale: str = "1",
+        window: bool = True,
+        style_sheet: str = "",
+        **environment,
     ) -> dict:
         home = tmp_path / "home"
         home.mkdir(exist_ok=True)
-        shutil.copy(HERE / "user.cfg", home / "user.cfg")
+        preferences = (HERE / "user.cfg").read_text(encoding="utf-8")
+        (home / "user.cfg").write_text(preferences.replace("STYLE_SHEET", style_sheet))
         result = tmp_path / "result.json"
         result.unlink(missing_ok=True)
         log = tmp_path / "log.txt"

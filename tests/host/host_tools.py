@@ -54,6 +54,8 @@ def click(target, where=None, button=QtCore.Qt.LeftButton):
 def picture_of_screen(name):
     """Keep a picture of the whole window, 3D view included."""
     settle(0.5)
+    window().statusBar().clearMessage()  # what other add-ons say at the start
+    settle(0.05)
     window().screen().grabWindow(0).save(str(PICTURES / f"{name}.png"))
 
 

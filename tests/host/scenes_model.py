@@ -1,5 +1,6 @@
 """Scenes with a model of ours, from the file to the posted copy, by real clicks."""
 
+import os
 import shutil
 from pathlib import Path
 
@@ -305,3 +306,21 @@ def trouble():
     wait_until(lambda: not desk.runs.busy, what="posting")
     found["not_written"] = told()
     return found
+
+
+def look():
+    """Take a picture in the theme and at the scale that the test asks for."""
+    desk = activate()
+    opened(desk, copied())
+    desk.choose_line(1)
+    canvas = widget(QtWidgets.QWidget, "SpanledgerCanvas")
+    spot = next(s for s in canvas.drawing.spots if (s.kind, s.number) == ("joint", 1))
+    click(canvas, QtCore.QPoint(round((spot.left + spot.right) / 2), round(spot.bottom - 4)))
+    FreeCADGui.ActiveDocument.ActiveView.fitAll()
+    settle()
+    picture_of_screen(os.environ["SPANLEDGER_LOOK"])
+    return {
+        "palette": canvas.palette_now().name,
+        "ratio": canvas.devicePixelRatioF(),
+        "spot": list(desk.spot or ()),
+    }

@@ -83,3 +83,22 @@ def test_trouble_ends_in_a_sentence_and_never_in_a_lost_window(in_freecad):
     assert found["still_shown"] == 11
     assert "out.ifc" in found["not_written"]
     assert "Traceback" not in found["log"]
+
+
+@pytest.mark.parametrize(
+    ("name", "style_sheet", "scale", "palette"),
+    [
+        ("light_100", "", "1", "light"),
+        ("dark_100", "Behave-dark.qss", "1", "dark"),
+        ("darker_100", "ProDark.qss", "1", "dark"),
+        ("light_200", "", "2", "light"),
+    ],
+)
+def test_the_desk_follows_theme_and_scale(in_freecad, name, style_sheet, scale, palette):
+    found = in_freecad(
+        "scenes_model:look", style_sheet=style_sheet, scale=scale, SPANLEDGER_LOOK=name
+    )
+
+    assert found["palette"] == palette
+    assert found["ratio"] == pytest.approx(float(scale), abs=0.01)  # by the dots per inch
+    assert found["spot"] == ["joint", 1]

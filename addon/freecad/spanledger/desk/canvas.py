@@ -60,7 +60,8 @@ class Canvas(QtWidgets.QWidget):
 
     def palette_now(self) -> Palette:
         """Return the palette that suits the window's theme."""
-        ground = self.palette().color(QtGui.QPalette.ColorRole.Window)
+        # Style sheets colour the main window for sure, and other widgets only where they say so.
+        ground = self.window().palette().color(QtGui.QPalette.ColorRole.Window)
         return palette_for((ground.red(), ground.green(), ground.blue()))
 
     def spot_at(self, x: float, y: float) -> Spot | None:

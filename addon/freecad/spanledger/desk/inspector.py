@@ -381,6 +381,8 @@ class Inspector(QtWidgets.QScrollArea):
         if title:
             self._layout.addWidget(heading(title))
         self.setWidget(body)
+        for part in (body, self.viewport()):
+            part.setAutoFillBackground(False)  # a dark style sheet's ground shows through
 
     def _facts(self, facts: list[tuple[str, str]]) -> None:
         label = facts_label("SpanledgerFacts")

@@ -11,8 +11,9 @@ from ..present.scene import Filled
 
 Colour = tuple[float, float, float]
 MOST_LABELS = 60
-TRANSPARENCY = 0.45
+TRANSPARENCY = 0.35
 BODY_TRANSPARENCY = 0.88
+COLOUR_CHILD = 2
 DEPTH_STEP = 2e-4
 
 
@@ -37,7 +38,13 @@ class Lines:
         self.node.addChild(self._points)
         if casing is not None:
             self.node.addChild(_stroke(casing, width + 3.0, self._lines, nearer=1, pickable=False))
-        self.node.addChild(_stroke(colour, width, self._lines, nearer=nearer, pickable=pickable))
+        stroke = _stroke(colour, width, self._lines, nearer=nearer, pickable=pickable)
+        self._colour = stroke.getChild(COLOUR_CHILD)
+        self.node.addChild(stroke)
+
+    def set_colour(self, colour: Colour) -> None:
+        """Draw in another colour."""
+        self._colour.rgb = colour
 
     def set_segments(self, ends: np.ndarray) -> None:
         """Draw straight segments (n, 2, 3)."""
@@ -63,11 +70,17 @@ class Faces:
         material.transparency = transparency
         pick = coin.SoPickStyle()
         pick.style = coin.SoPickStyle.UNPICKABLE
+        self._material = material
         self._points, self._faces = coin.SoCoordinate3(), coin.SoIndexedFaceSet()
         for node in (pick, hints, material, self._points, self._faces):
             self.node.addChild(node)
         self._outline = Lines(colour, 1.5, pickable=False)
         self.node.addChild(self._outline.node)
+
+    def set_colour(self, colour: Colour) -> None:
+        """Show faces and outline in another colour."""
+        self._material.diffuseColor = colour
+        self._outline.set_colour(colour)
 
     def set_filled(self, drawn: Filled) -> None:
         """Draw the triangles and the outline of a diagram."""
@@ -156,7 +169,7 @@ def _stroke(
     style.lineWidth = width
     for node in (pick, base, style, lines):
         stroke.addChild(node)
-    return stroke
+    return stroke  # its colour is the child COLOUR_CHILD
 
 
 def _set_points(node: coin.SoCoordinate3, points: np.ndarray) -> None:

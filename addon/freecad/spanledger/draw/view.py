@@ -12,12 +12,19 @@ import numpy as np
 from pivy import coin
 
 from ..document import scene_in
+from ..present.layout import DOWNWARD
 from ..present.look import VIEW
 from ..present.scene import Scene, filled
 from .nodes import Body, Faces, Labels, Lines
 
 LINES, DIAGRAMS = "Lines", "Lines and diagrams"
 _ICON = "spanledger.svg"
+# Colours below and above the axis.
+_COLOURS = {
+    "moment": ("sagging", "hogging"),
+    "shear": ("shear", "shear"),
+    "deflection": ("deflection", "deflection"),
+}
 
 
 class BeamLinesView:
@@ -32,7 +39,9 @@ class BeamLinesView:
         self.chosen_line: int | None = None
         palette = VIEW
         self.lines = Lines(palette.parts("line"), 2.5, casing=palette.parts("ground"))
-        self.supports = Lines(palette.parts("support"), 1.5, pickable=False)
+        self.supports = Lines(
+            palette.parts("support"), 1.5, casing=palette.parts("ground"), pickable=False
+        )
         self.sagging = Faces(palette.parts("sagging"))
         self.hogging = Faces(palette.parts("hogging"))
         self.chosen = Lines(palette.parts("chosen"), 4.5, nearer=3, pickable=False)
@@ -71,6 +80,11 @@ class BeamLinesView:
             return
         upper = np.array(obj.Upper).reshape(count, obj.Stations)
         lower = np.array(obj.Lower).reshape(count, obj.Stations)
+        below, above = _COLOURS.get(obj.Quantity, _COLOURS["moment"])
+        self.sagging.set_colour(VIEW.parts(below))
+        self.hogging.set_colour(VIEW.parts(above))
+        if not DOWNWARD.get(obj.Quantity, True):
+            upper, lower = -lower, -upper
         self.sagging.set_filled(filled(self.scene, upper, obj.Height, positive=True))
         self.hogging.set_filled(filled(self.scene, lower, obj.Height, positive=False))
 

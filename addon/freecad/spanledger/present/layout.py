@@ -93,6 +93,9 @@ def _elevation(
             named = case
         bottom = axis - 18.0 - row_height * (len(rows) - 1 - number)
         _actions(drawing, strip, case, actions, bottom, row_height, measure)
+    if not rows:
+        words = Words(drawing.to_pixel(0.0), axis - 28.0, "no action here", "faint", "left")
+        drawing.words.append(words)
     _members(drawing, strip, axis, units, measure, chosen)
     _joints(drawing, strip, axis, units, chosen)
     _dimensions(drawing, strip, axis + 46.0, units, measure)

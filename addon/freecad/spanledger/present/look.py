@@ -75,8 +75,21 @@ DARK = Palette(
     },
 )
 
-# The 3D view keeps its own ground (a pale or a grey gradient), whatever the theme.
-VIEW = LIGHT
+# The 3D view keeps its own ground, white or a dark gradient, whatever the theme: its colours lie
+# in the middle, and its lines have a pale casing.
+VIEW = Palette(
+    "view",
+    {
+        **LIGHT.colours,
+        "support": (126, 88, 34),
+        "faint": (122, 126, 130),
+        "sagging": (0, 152, 156),
+        "hogging": (208, 66, 138),
+        "shear": (186, 132, 0),
+        "deflection": (92, 116, 220),
+        "chosen": (232, 96, 0),
+    },
+)
 
 
 def palette_for(window_ground: Rgb) -> Palette:
