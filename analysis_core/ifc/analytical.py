@@ -20,6 +20,7 @@ from analysis_core.ifc.analytical_targets import Target, chained
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.curves import Measures
 from analysis_core.ifc.frames import Frame
+from analysis_core.ifc.ours import RESULT_TYPE
 from analysis_core.ifc.source import Source
 from analysis_core.settings import Settings
 
@@ -54,7 +55,9 @@ class _Reader:
         self.notes = notes
         units = source.units
         self.topology = Topology(self.file, Measures(units.length, units.angle))
-        self.models = list(self.file.by_type("IfcStructuralAnalysisModel"))
+        # What we posted earlier is a part of a model that was there, and no model of its own.
+        models = self.file.by_type("IfcStructuralAnalysisModel")
+        self.models = [model for model in models if model[4] != RESULT_TYPE]
         self.shared = self._shared_placements()
 
     def building(self) -> Building:
@@ -68,10 +71,8 @@ class _Reader:
         attachments = conditions.attachments(relations, locals_, nodes, self.settings.tolerances)
         self._report_surfaces_and_edges(relations)
         actions = list(self.file.by_type("IfcStructuralAction"))
-        groups = GroupReader(self.file, self.notes)
-        cases, combinations, cases_of = groups.read(
-            [action.id() for action in actions], self._frames_of_groups()
-        )
+        groups = GroupReader(self.file, [action.id() for action in actions], self.notes)
+        cases, combinations, cases_of = groups.read(self._frames_of_groups())
         placed = ActionReader(
             self.topology,
             self.source.units,
