@@ -7,7 +7,7 @@ one.
 
 from __future__ import annotations
 
-from collections.abc import Collection, Mapping
+from collections.abc import Callable, Collection, Mapping
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -22,12 +22,22 @@ Path = Literal["append", "general"]
 
 
 @dataclass(frozen=True, slots=True)
+class Retained:
+    """What stays while its group is written anew, by the group's GlobalId.
+
+    ``members`` are assigned to the group, ``results`` are the result groups of a partial model.
+    """
+
+    members: Mapping[str, tuple[int, ...]] = field(default_factory=dict)
+    results: Mapping[str, tuple[int, ...]] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
 class Cleared:
     """``base``: the file to add to; ``kept``: lines of our block that stay in it, ``replaced``
     those that went as a whole.
 
-    ``before``: the property sets that were taken out, by GlobalId.  ``retained``: reactions that
-    stay and whose result group is written anew, by the group's GlobalId.
+    ``before``: the property sets that were taken out.
     """
 
     base: bytes
@@ -35,7 +45,7 @@ class Cleared:
     replaced: bytes = b""
     path: Path = "append"
     before: SetContents = field(default_factory=SetContents)
-    retained: Mapping[str, tuple[int, ...]] = field(default_factory=dict)
+    retained: Retained = field(default_factory=Retained)
 
 
 def cleared_of_all(data: bytes, kind: str = RESULTS) -> Cleared:
@@ -67,42 +77,33 @@ def cleared_of_some(
     data: bytes,
     wanted: Collection[tuple[str, str]],
     objects: Collection[str],
-    groups: Collection[str],
+    groups_of: Callable[[StepIndex], Collection[str]],
 ) -> Cleared:
     """Return the file without what is written anew; the results of other lines stay.
 
-    ``wanted``: (GlobalId of the element, name of the set); ``objects``: GlobalIds of reactions,
-    ``groups`` those of result groups.
+    ``wanted``: (GlobalId of the element, name of the set); ``objects``: GlobalIds of reactions;
+    ``groups_of`` gives those of the groups that hold them.
     """
     if not _mentions(data):
         return Cleared(data)
     index = StepIndex(data)
     ours = find_ours(index)
     doomed, rewritten = _replaced_sets(index, ours, wanted)
-    sets = {number: ours.sets[number] for number in doomed}
-    before = contents_in_file(index, sets)
+    before = contents_in_file(index, {number: ours.sets[number] for number in doomed})
+    groups = groups_of(index)
     rooted = index.rooted([*objects, *groups])
-    doomed |= _of_ours(ours, rooted, objects)
-    retained = {
-        group: _members(index, number) - doomed
-        for group in groups
-        for number in _of_ours(ours, rooted, [group])
-    }
-    doomed |= _of_ours(ours, rooted, groups)
+    doomed |= _of_ours(ours, rooted, [*objects, *groups])
+    retained = Retained(
+        _left(groups, rooted, lambda n: _members(index, n) - doomed),
+        _left(groups, rooted, lambda n: _results(index, n) - doomed),
+    )
     outside = cut_block(data, RESULTS)
     left = excise(index, doomed, rewritten=rewritten)
     cut = cut_block(left, RESULTS)
     base, kept = (cut.base, cut.block) if cut is not None else (left, b"")
-    path: Path = "append" if (outside is None and not doomed) or (
-        outside is not None and outside.intact and outside.base == base
-    ) else "general"  # fmt: skip
-    return Cleared(
-        base,
-        kept,
-        path=path,
-        before=before,
-        retained={g: tuple(sorted(members)) for g, members in retained.items()},
-    )
+    untouched = outside.base == base if outside is not None else not doomed
+    path: Path = "append" if untouched else "general"
+    return Cleared(base, kept, path=path, before=before, retained=retained)
 
 
 def removed(data: bytes) -> tuple[bytes, int, Path]:
@@ -138,6 +139,23 @@ def _replaced_sets(
 def _of_ours(ours: Ours, rooted: Mapping[str, list[int]], global_ids: Collection[str]) -> set[int]:
     found = {number for g in global_ids for number in rooted.get(g, ())}
     return found & ours.by_part[RESULTS]
+
+
+def _left(
+    groups: Collection[str],
+    rooted: Mapping[str, list[int]],
+    find: Callable[[int], set[int]],
+) -> dict[str, tuple[int, ...]]:
+    return {g: tuple(sorted(find(n))) for g in groups for n in rooted.get(g, ())}
+
+
+def _results(index: StepIndex, group: int) -> set[int]:
+    """The result groups of an analysis model."""
+    if index.keyword(index.row(group)) != "IFCSTRUCTURALANALYSISMODEL":
+        return set()
+    results = index.arguments(group)[8]
+    found = map(reference, results) if isinstance(results, list) else ()
+    return {n for n in found if n is not None}
 
 
 def _members(index: StepIndex, group: int) -> set[int]:

@@ -9,10 +9,8 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable, Mapping
 
-import ifcopenshell.ifcopenshell_wrapper as parser
-
 from analysis_core.ifc.append import mark_spans
-from analysis_core.ifc.set_lines import PARSER_SCHEMAS
+from analysis_core.ifc.schema_classes import is_a
 from analysis_core.ifc.step_index import StepIndex, reference
 
 _APPLICATION = "'Spanledger'"
@@ -53,7 +51,6 @@ class _Excision:
         self._index = index
         self._doomed = doomed
         self._rewritten: dict[int, str] = {}
-        self._schema = parser.schema_by_name(PARSER_SCHEMAS.get(index.schema, index.schema))
 
     def follow_up(self) -> None:
         """Relations to what goes: rewrite them, or let them go as well."""
@@ -140,15 +137,7 @@ class _Excision:
     def _is_a(self, instance: int, ancestor: str, *, unknown: bool) -> bool:
         """Whether an instance is of a class; ``unknown`` where the schema does not know its own."""
         keyword = self._index.keyword(self._index.row(instance))
-        try:
-            entity = self._schema.declaration_by_name(keyword).as_entity()
-        except RuntimeError:
-            return unknown
-        while entity is not None:
-            if entity.name() == ancestor:
-                return True
-            entity = entity.supertype()
-        return False
+        return is_a(self._index.schema, keyword, ancestor, unknown=unknown)
 
 
 def _whole_line(data: bytes, start: int, end: int) -> tuple[int, int]:

@@ -9,15 +9,13 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-import ifcopenshell
-
 from analysis_core.ifc.append import Lines
+from analysis_core.ifc.extract import extract
 from analysis_core.ifc.file_units import FileUnits, read_units
 from analysis_core.ifc.step_index import StepIndex, reference
 from analysis_core.ifc.step_values import real
 
 _UNITS_ATTRIBUTE = 8  # of IfcProject, in every schema
-_PARSER_SCHEMAS = {"IFC4X3": "IFC4X3_ADD2"}
 _METRE = "IFCSIUNIT(*,.LENGTHUNIT.,$,.METRE.)"
 _NEWTON = "IFCSIUNIT(*,.FORCEUNIT.,$,.NEWTON.)"
 
@@ -94,21 +92,6 @@ def _units_alone(index: StepIndex) -> Any:
     for project in index.instances_of("IFCPROJECT"):
         attributes = index.arguments(project)
         if len(attributes) > _UNITS_ATTRIBUTE and (units := reference(attributes[8])) is not None:
-            break
-    else:
-        return None
-    texts, waiting = {}, [units]
-    while waiting:
-        instance = waiting.pop()
-        if instance in index and instance not in texts:
-            texts[instance] = index.text(instance)
-            waiting += index.references(instance)
-    schema = _PARSER_SCHEMAS.get(index.schema, index.schema)
-    head = (
-        "ISO-10303-21;\nHEADER;\nFILE_DESCRIPTION((''),'2;1');\n"
-        "FILE_NAME('','',(''),(''),'','','');\n"
-        f"FILE_SCHEMA(('{schema}'));\nENDSEC;\nDATA;\n"
-    )
-    own = f"#{max(texts) + 1}=IFCPROJECT('0000000000000000000000',$,$,$,$,$,$,$,#{units});"
-    body = "\n".join([*texts.values(), own])
-    return ifcopenshell.file.from_string(f"{head}{body}\nENDSEC;\nEND-ISO-10303-21;\n")
+            own = f"IFCPROJECT('0000000000000000000000',$,$,$,$,$,$,$,#{units})"
+            return extract(index, [units], own)
+    return None

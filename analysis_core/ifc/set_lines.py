@@ -4,16 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
-import ifcopenshell.ifcopenshell_wrapper as parser
-
 from analysis_core.findings import Finding
 from analysis_core.ifc.append import Lines
 from analysis_core.ifc.global_ids import global_ids
 from analysis_core.ifc.property_sets import PropertySet
+from analysis_core.ifc.schema_classes import is_a
 from analysis_core.ifc.step_index import StepIndex
 from analysis_core.ifc.step_values import string
-
-PARSER_SCHEMAS = {"IFC4X3": "IFC4X3_ADD2"}
 
 
 def set_name(made: PropertySet) -> str:
@@ -48,10 +45,13 @@ def find_elements(
     """
     found: dict[str, int] = {}
     findings: list[Finding] = []
-    kinds = _ObjectClasses(index)
     rooted = index.rooted(global_ids_wanted)
     for global_id in global_ids_wanted:
-        objects = [i for i in rooted.get(global_id, ()) if kinds.is_object(i)]
+        objects = [
+            number
+            for number in rooted.get(global_id, ())
+            if is_a(index.schema, index.keyword(index.row(number)), "IfcObject")
+        ]
         if objects:
             found[global_id] = objects[0]
         else:
@@ -59,32 +59,6 @@ def find_elements(
         if len(objects) > 1:
             findings.append(_shared_id(global_id, len(objects)))
     return found, findings
-
-
-class _ObjectClasses:
-    """Tells whether an instance may have property sets of its own; looks each class up once."""
-
-    def __init__(self, index: StepIndex) -> None:
-        self._index = index
-        self._schema = parser.schema_by_name(PARSER_SCHEMAS.get(index.schema, index.schema))
-        self._known: dict[str, bool] = {}
-
-    def is_object(self, instance: int) -> bool:
-        keyword = self._index.keyword(self._index.row(instance))
-        if keyword not in self._known:
-            self._known[keyword] = self._look_up(keyword)
-        return self._known[keyword]
-
-    def _look_up(self, keyword: str) -> bool:
-        try:
-            entity = self._schema.declaration_by_name(keyword).as_entity()
-        except RuntimeError:
-            return False
-        while entity is not None:
-            if entity.name() == "IfcObject":
-                return True
-            entity = entity.supertype()
-        return False
 
 
 def _no_element(global_id: str) -> Finding:

@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import os
 from collections.abc import Callable, Collection
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import Literal
@@ -20,7 +20,7 @@ from analysis_core.findings import Finding
 from analysis_core.ifc import append, atomic, clearing
 from analysis_core.ifc.container import Container, read_container
 from analysis_core.ifc.governing import Part, element_effects, element_parts
-from analysis_core.ifc.measures import measures
+from analysis_core.ifc.measures import Measures, measures
 from analysis_core.ifc.owner import owner_history
 from analysis_core.ifc.property_sets import (
     DIAGRAMS,
@@ -29,6 +29,12 @@ from analysis_core.ifc.property_sets import (
     RECORD,
     PropertySet,
     SetMaker,
+)
+from analysis_core.ifc.result_groups import (
+    CaseStations,
+    ResultGroups,
+    reaction_id,
+    rewritten_ids,
 )
 from analysis_core.ifc.set_contents import timeless
 from analysis_core.ifc.set_lines import find_elements, write_sets
@@ -48,7 +54,8 @@ class PostReport:
     """What posting did: property sets that are new, that have changed, and that have not.
 
     ``path`` is "append" where bytes were only added to the model, "general" where entities of
-    ours that another program had rewritten were taken out first.
+    ours that another program had rewritten were taken out first.  ``groups``: result groups
+    written for analysis models.
     """
 
     written: int
@@ -56,6 +63,7 @@ class PostReport:
     unchanged: int
     path: Literal["append", "general"]
     findings: tuple[Finding, ...] = ()
+    groups: int = 0
 
 
 @dataclass(frozen=True, slots=True)
@@ -77,6 +85,7 @@ def post(
     *,
     analysis_model: bool = False,
     only: Collection[str] = (),
+    stations: CaseStations | None = None,
     progress: Progress | None = None,
     computed_at: datetime | None = None,
 ) -> PostReport:
@@ -84,13 +93,15 @@ def post(
 
     ``outcome`` holds all lines of the model.  ``only``: marks of the lines to be written, all
     where empty; then what was posted for others stays.  Otherwise everything posted earlier gives
-    way.  ``computed_at``: now where None.
+    way.  ``stations`` gives the section forces of a line's cases along its members, for the
+    curve reactions of an analysis model; at the ends only where None.  ``computed_at``: now
+    where None.
 
     Raises IfcReadError where the model cannot be read, IfcWriteError where the target cannot be
     written.
     """
     tell = progress or _silent
-    job = _Job(outcome, only, computed_at or datetime.now(UTC), tell)
+    job = _Job(outcome, only, stations, computed_at or datetime.now(UTC), tell)
     source = Path(source_path)
     with atomic.writing_to(target_path) as target:
         guard = _Guard(source, target)
@@ -123,9 +134,15 @@ class _Job:
     """One posting: what is wanted, and what it becomes in a file."""
 
     def __init__(
-        self, outcome: Outcome, only: Collection[str], moment: datetime, tell: Progress
+        self,
+        outcome: Outcome,
+        only: Collection[str],
+        stations: CaseStations | None,
+        moment: datetime,
+        tell: Progress,
     ) -> None:
         self._outcome = outcome
+        self._stations = stations
         self._moment = moment
         self._tell = tell
         self._findings: list[Finding] = []
@@ -147,15 +164,20 @@ class _Job:
         self._findings += findings
         self._tell("Posting", 0.4)
         lines = append.Lines(append.first_free(index, cleared.kept))
-        sets = self._sets(index, lines, elements)
-        set_ids = write_sets(sets, elements, lines, owner_history(index, lines))
+        owner = owner_history(index, lines)
+        units = measures(index, lines)
+        sets = self._sets(index, units, elements)
+        set_ids = write_sets(sets, elements, lines, owner)
+        self._tell("Posting", 0.7)
+        groups = ResultGroups(index, lines, owner, units, self._stations, cleared.retained)
+        count = groups.write(self._outcome, self._supports, self._parts, elements)
         self._tell("Posting", 0.8)
         assert index.data_end is not None  # _check has seen to it
         text = cleared.kept + lines.text(index.newline)
         parts: list[bytes | memoryview] = [index.data]
         if text:
             parts = append.with_block(index, text, append.RESULTS)
-        return parts, self._report(cleared, lines, text, sets, set_ids)
+        return parts, replace(self._report(cleared, lines, text, sets, set_ids), groups=count)
 
     def _restrict(self, only: frozenset[str]) -> None:
         """Keep the elements of some lines, and what these bear on."""
@@ -173,12 +195,17 @@ class _Job:
             return clearing.cleared_of_all(data)
         wanted = {(e, name) for e in self._parts for name in (EFFECTS, DIAGRAMS, RECORD)}
         wanted |= {(element, REACTIONS) for element in self._supports}
-        return clearing.cleared_of_some(data, wanted, (), ())
+        cases = self._outcome.model.cases
+        items = [*self._parts, *self._supports]
+        reactions = [reaction_id(item, case) for item in items for case in cases]
+        return clearing.cleared_of_some(
+            data, wanted, reactions, lambda index: rewritten_ids(index, cases)
+        )
 
     def _sets(
-        self, index: StepIndex, lines: append.Lines, elements: dict[str, int]
+        self, index: StepIndex, units: Measures, elements: dict[str, int]
     ) -> list[PropertySet]:
-        maker = SetMaker(index.schema, measures(index, lines), self._outcome.rules, self._moment)
+        maker = SetMaker(index.schema, units, self._outcome.rules, self._moment)
         sets: list[PropertySet] = []
         for element, parts in self._parts.items():
             if element in elements:

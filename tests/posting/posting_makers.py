@@ -215,3 +215,68 @@ def small_model(
         "ENDSEC;", "END-ISO-10303-21;",
     ]  # fmt: skip
     return (newline.join(text) + newline + tail).encode()
+
+
+ANALYSIS = {
+    name: global_id(f"posting tests/{name}")
+    for name in ("model", "member", "start", "end", "case", "second member")
+}
+
+
+def analysis_model(schema: str = "IFC4", *, turned: bool = False) -> bytes:
+    """Return an analysis model in mm and kN: two members of 6 m in a row, three nodes, one case.
+
+    The nodes at the start and the end are supported.  ``turned``: the model's own x axis is the
+    world's y axis, so that a line along the world's x runs along its -y.
+    """
+    old = schema == "IFC2X3"
+    owner, tail = ("#4", "") if old else ("$", ",#25")
+    member = "" if old else ",#27"
+    node = "" if old else ",$"
+    reference = "#28" if turned else "$"
+    i = ANALYSIS
+    places = [f"#{70 + n}" if old else "#25" for n in range(5)]
+    text = small_model(schema).decode().split("#24=")[0].splitlines()
+    points = {40: "0.,0.,3000.", 41: "6000.,0.,3000.", 42: "12000.,0.,3000."}
+    if turned:  # the same places in the world
+        points = {40: "0.,0.,3000.", 41: "0.,-6000.,3000.", 42: "0.,-12000.,3000."}
+    text += [
+        *([] if old else ["#25=IFCLOCALPLACEMENT($,#26);"]), f"#26=IFCAXIS2PLACEMENT3D(#20,$,{reference});",
+        "#27=IFCDIRECTION((0.,0.,1.));", "#28=IFCDIRECTION((0.,1.,0.));",
+        *[f"#{n}=IFCCARTESIANPOINT(({p}));" for n, p in points.items()],
+        *[f"#{n + 3}=IFCVERTEXPOINT(#{n});" for n in points],
+        "#46=IFCEDGE(#43,#44);", "#47=IFCEDGE(#44,#45);",
+        *[f"#{80 + n}=IFCTOPOLOGYREPRESENTATION(#22,'Reference','{kind}',(#{item}));"
+          f"\n#{90 + n}=IFCPRODUCTDEFINITIONSHAPE($,$,(#{80 + n}));"
+          for n, (kind, item) in enumerate(
+              [("Edge", 46), ("Edge", 47), ("Vertex", 43), ("Vertex", 44), ("Vertex", 45)])],
+        *([f"#{70 + n}=IFCLOCALPLACEMENT($,#26);" for n in range(5)] if old else []),
+        f"#50=IFCSTRUCTURALCURVEMEMBER('{i['member']}',{owner},'M1',$,$,{places[0]},#90,"
+        f".RIGID_JOINED_MEMBER.{member});",
+        f"#51=IFCSTRUCTURALCURVEMEMBER('{i['second member']}',{owner},'M2',$,$,{places[1]},#91,"
+        f".RIGID_JOINED_MEMBER.{member});",
+        f"#52=IFCSTRUCTURALPOINTCONNECTION('{i['start']}',{owner},'N1',$,$,{places[2]},#92,#60"
+        f"{node});",
+        f"#53=IFCSTRUCTURALPOINTCONNECTION('{global_id('middle')}',{owner},'N2',$,$,{places[3]},"
+        f"#93,$" + node + ");",
+        f"#54=IFCSTRUCTURALPOINTCONNECTION('{i['end']}',{owner},'N3',$,$,{places[4]},#94,#60"
+        f"{node});",
+        f"#55=IFCSTRUCTURALPOINTACTION('{global_id('action')}',{owner},'F',$,$,$,$,#56,"
+        f".GLOBAL_COORDS.,.F.{',$' if old else ''});",
+        "#56=IFCSTRUCTURALLOADSINGLEFORCE($,0.,0.,-5.,$,$,$);",
+        f"#57=IFCRELCONNECTSSTRUCTURALACTIVITY('{global_id('on node')}',{owner},$,$,#53,#55);",
+        f"#58=IFCRELASSIGNSTOGROUP('{global_id('in case')}',{owner},$,$,(#55),$,#62);",
+        "#60=IFCBOUNDARYNODECONDITION('pin',"
+        + (",".join(["-1.,-1.,-1.", "0.,0.,0."]) if old else ",".join(
+            ["IFCBOOLEAN(.T.)"] * 3 + ["IFCBOOLEAN(.F.)"] * 3)) + ");",
+        f"#61=IFCSTRUCTURALANALYSISMODEL('{i['model']}',{owner},'Analysis',$,$,.LOADING_3D.,$,"
+        f"(#62),$" + tail + ");",
+        f"#62=IFCSTRUCTURALLOADGROUP('{i['case']}',{owner},'G',$,$,.LOAD_CASE.,.PERMANENT_G.,"
+        ".DEAD_LOAD_G.,$,$);",
+        f"#63=IFCRELASSIGNSTOGROUP('{global_id('grouping')}',{owner},$,$,"
+        "(#50,#51,#52,#53,#54),$,#61);",
+        *[f"#{64 + n}=IFCRELCONNECTSSTRUCTURALMEMBER('{global_id(f'join {n}')}',{owner},$,$,#{m},"
+          f"#{c},$,$,$,$);" for n, (m, c) in enumerate([(50, 52), (50, 53), (51, 53), (51, 54)])],
+        "ENDSEC;", "END-ISO-10303-21;", "",
+    ]  # fmt: skip
+    return "\n".join(text).encode()

@@ -3,7 +3,17 @@
 import ifcopenshell
 import ifcopenshell.validate
 import pytest
-from posting_makers import BEAM, COLUMN_A, SCHEMAS, outcome_of, small_model, span_result
+from posting_makers import (
+    ANALYSIS,
+    BEAM,
+    COLUMN_A,
+    SCHEMAS,
+    analysis_model,
+    outcome_of,
+    small_model,
+    span_result,
+    with_case_ids,
+)
 
 from analysis_core.ifc import writer
 
@@ -26,6 +36,17 @@ def test_property_sets_and_the_units_we_add_are_valid(tmp_path, schema):
     path = tmp_path / "model.ifc"
     path.write_bytes(small_model(schema, torque=False))
     writer.post(path, path, OUTCOME)
+
+    assert complaints(path) == []
+
+
+@pytest.mark.parametrize("schema", SCHEMAS)
+def test_result_groups_are_valid(tmp_path, schema):
+    path = tmp_path / "model.ifc"
+    path.write_bytes(analysis_model(schema))
+    supports = (ANALYSIS["start"], ANALYSIS["end"])
+    results = outcome_of(span_result(ANALYSIS["member"], supports=supports))
+    writer.post(path, path, with_case_ids(results, {"G": ANALYSIS["case"]}))
 
     assert complaints(path) == []
 
