@@ -390,7 +390,8 @@ def _check_member(line: Line, member: Member) -> None:
             f"its joints."
         )
     for piece in member.pieces:
-        values = [piece.flexural_at(u / 8.0) for u in range(9)]
+        looks = 1 if len(piece.flexural) == 1 else 9
+        values = [piece.flexural_at(u / 8.0) for u in range(looks)]
         if not all(math.isfinite(v) and v > 0.0 for v in values):
             raise ModelError(
                 f"{where} has flexural rigidity {min(values):.3g} N·m²; it must be positive. "

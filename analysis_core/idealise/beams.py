@@ -16,35 +16,30 @@ class Beam:
     horizontally from its start unless called stations."""
 
     member: AxisMember
+    id: str
     direction: Vector
     length: float
     ray: Ray
     run: float
+    flatness: float
+    """Horizontal metres per metre of axis."""
+    rise: float
+    """Metres up per horizontal metre."""
     above: float
     below: float
     half_width: float
 
-    @property
-    def id(self) -> str:
-        """GlobalId of the member."""
-        return self.member.global_id
-
     def level(self, along: float) -> float:
         """Return the level of the axis at a place."""
-        return self.member.start[2] + self.direction[2] / self.flatness * along
+        return self.member.start[2] + self.rise * along
 
     def bottom(self, along: float) -> float:
         """Return the level of the underside at a place."""
-        return self.level(along) - self.below
+        return self.member.start[2] + self.rise * along - self.below
 
     def top(self, along: float) -> float:
         """Return the level of the upper side at a place."""
-        return self.level(along) + self.above
-
-    @property
-    def flatness(self) -> float:
-        """Horizontal metres per metre of axis."""
-        return self.run / self.length
+        return self.member.start[2] + self.rise * along + self.above
 
     def station(self, along: float) -> float:
         """Return the station (m along the axis) of a place."""
@@ -63,7 +58,10 @@ def beam_of(member: AxisMember) -> Beam:
     flat = math.hypot(direction[0], direction[1])
     ray = Ray((member.start[0], member.start[1]), (direction[0] / flat, direction[1] / flat))
     above, below, half_width = _extents(member, flat)
-    return Beam(member, direction, size, ray, size * flat, above, below, half_width)
+    return Beam(
+        member, member.global_id, direction, size, ray, size * flat, flat, direction[2] / flat,
+        above, below, half_width,
+    )  # fmt: skip
 
 
 def _extents(member: AxisMember, flat: float) -> tuple[float, float, float]:

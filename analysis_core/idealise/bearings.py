@@ -6,13 +6,15 @@ Every candidate is measured; ``chains`` and ``bearing_choice`` decide among them
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from typing import Literal
 
+import numpy as np
+
 from analysis_core.building import AxisMember, Carrier
 from analysis_core.idealise.beams import Beam
-from analysis_core.idealise.grid_index import GridIndex
+from analysis_core.idealise.pairs import Floats, overlapping
 from analysis_core.idealise.plan import (
     Spot,
     area,
@@ -68,39 +70,66 @@ class Bearing:
         return self.high - self.low
 
 
-class Surroundings:
-    """All carriers and beams of a building, found by place."""
+def find_bearings(
+    beams: list[Beam], carriers: Sequence[Carrier], tolerances: Tolerances
+) -> dict[str, list[Bearing]]:
+    """Return every place where each beam may bear, by GlobalId and in order along it."""
+    known = [c for c in carriers if len(c.corners) >= 3 and kind_of(c) is not None]
+    known.sort(key=lambda carrier: carrier.global_id)
+    found: dict[str, list[Bearing]] = {beam.id: [] for beam in beams}
+    boxes = _boxes_of_beams(beams, tolerances)
+    for i, j in _pairs(boxes, _boxes_of_carriers(known)):
+        found[beams[i].id].extend(_on_carrier(beams[i], known[j], tolerances))
+    for i, j in _crossing_pairs(beams, boxes, tolerances):
+        found[beams[i].id].extend(_on_beam(beams[i], beams[j], tolerances))
+    for bearings in found.values():
+        bearings.sort(key=lambda b: (b.along, RANK[b.kind], b.id))
+    return found
 
-    def __init__(
-        self, carriers: tuple[Carrier, ...], beams: list[Beam], tolerances: Tolerances
-    ) -> None:
-        self._tolerances = tolerances
-        self._carriers: GridIndex[Carrier] = GridIndex()
-        self._beams: GridIndex[Beam] = GridIndex()
-        reach = tolerances.bearing
-        for carrier in sorted(carriers, key=lambda c: c.global_id):
-            if len(carrier.corners) < 3:
-                continue
-            xs, ys = zip(*carrier.corners, strict=True)
-            self._carriers.add_box(
-                carrier,
-                (min(xs), min(ys), carrier.bottom, max(xs), max(ys), carrier.top),
-            )
-        for beam in beams:
-            around = reach + beam.half_width + max(beam.above, beam.below)
-            self._beams.add_segment(beam, beam.member.start, beam.member.end, around)
 
-    def bearings_of(self, beam: Beam) -> list[Bearing]:
-        """Return every place where ``beam`` may bear, in order along it."""
-        around = self._tolerances.bearing + beam.half_width + max(beam.below, beam.above)
-        start, end = beam.member.start, beam.member.end
-        found: list[Bearing] = []
-        for carrier in self._carriers.near_segment(start, end, around):
-            found.extend(_on_carrier(beam, carrier, self._tolerances))
-        for other in self._beams.near_segment(start, end, around):
-            if other.id != beam.id:
-                found.extend(_on_beam(beam, other, self._tolerances))
-        return sorted(found, key=lambda b: (b.along, RANK[b.kind], b.id))
+def _pairs(first: Floats, second: Floats) -> Iterator[tuple[int, int]]:
+    i, j = overlapping(first, second)
+    return zip(i.tolist(), j.tolist(), strict=True)
+
+
+def _boxes_of_beams(beams: list[Beam], tolerances: Tolerances) -> Floats:
+    """Boxes around beams with everything near enough to carry them."""
+    ends = np.array([(b.member.start, b.member.end) for b in beams]).reshape(-1, 2, 3)
+    around = np.array(
+        [tolerances.bearing + b.half_width + max(b.below, b.above) for b in beams]
+    ).reshape(-1, 1)
+    return np.hstack([ends.min(axis=1) - around, ends.max(axis=1) + around])
+
+
+def _boxes_of_carriers(carriers: list[Carrier]) -> Floats:
+    rows = []
+    for carrier in carriers:
+        xs, ys = zip(*carrier.corners, strict=True)
+        rows.append((min(xs), min(ys), carrier.bottom, max(xs), max(ys), carrier.top))
+    return np.array(rows).reshape(-1, 6)
+
+
+def _crossing_pairs(
+    beams: list[Beam], boxes: Floats, tolerances: Tolerances
+) -> Iterator[tuple[int, int]]:
+    """Pairs of beams whose axes cross in plan, on both or within reach of their ends."""
+    i, j = overlapping(boxes, boxes)
+    keep = i != j
+    i, j = i[keep], j[keep]
+    origin = np.array([b.ray.origin for b in beams]).reshape(-1, 2)
+    way = np.array([b.ray.direction for b in beams]).reshape(-1, 2)
+    run = np.array([b.run for b in beams])
+    half = np.array([b.half_width for b in beams])
+    turn = way[i, 0] * way[j, 1] - way[i, 1] * way[j, 0]
+    keep = np.abs(turn) >= _SKEW
+    i, j, turn = i[keep], j[keep], turn[keep]
+    apart = origin[j] - origin[i]
+    along = (apart[:, 0] * way[j, 1] - apart[:, 1] * way[j, 0]) / turn
+    there = (apart[:, 0] * way[i, 1] - apart[:, 1] * way[i, 0]) / turn
+    reach = tolerances.bearing + tolerances.join
+    near = (along >= -reach - half[j] / _SKEW) & (along <= run[i] + reach + half[j] / _SKEW)
+    near &= (there >= -reach - half[i] / _SKEW) & (there <= run[j] + reach + half[i] / _SKEW)
+    return zip(i[near].tolist(), j[near].tolist(), strict=True)
 
 
 def kind_of(carrier: Carrier | AxisMember) -> Kind | None:
@@ -127,7 +156,8 @@ _CLASSES: tuple[tuple[str, Kind], ...] = (
 
 def _on_carrier(beam: Beam, carrier: Carrier, tolerances: Tolerances) -> Iterator[Bearing]:
     kind = kind_of(carrier)
-    if kind is None:
+    highest = max(beam.level(0.0), beam.level(beam.run))
+    if kind is None or carrier.bottom >= highest:  # it stands on the beam, or higher
         return
     near, far, right, left = extent(carrier.corners, beam.ray)
     reach = tolerances.bearing

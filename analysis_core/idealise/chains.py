@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from typing import Literal
 
+import numpy as np
+
 from analysis_core.idealise.beams import Beam
 from analysis_core.idealise.bearings import RANK, Bearing
-from analysis_core.idealise.grid_index import GridIndex
+from analysis_core.idealise.pairs import overlapping
 from analysis_core.idealise.vectors import Vector, dot, length, scale, subtract
 from analysis_core.model import Point
 from analysis_core.settings import Tolerances
@@ -60,23 +62,33 @@ def link_ends(
     beam are not joined through it, unless the job file makes an end rigid (``kept_rigid``).
     """
     tips = [_tip(beam, end) for beam in beams for end in (0, 1)]
-    index: GridIndex[_Tip] = GridIndex()
-    for tip in tips:
-        index.add_box(tip, (*tip.point, *tip.point))
     best: dict[End, tuple[float, Link]] = {}
-    for tip in tips:
-        x, y, z = tip.point
-        reach = _WIDEST
-        for other in index.near_box((x - reach, y - reach, z - 0.5, x + reach, y + reach, z + 0.5)):
-            found = _link(tip, other, bearings, tolerances, over_bearings, kept_rigid)
-            if found is not None and (tip.key not in best or found[0] < best[tip.key][0]):
-                best[tip.key] = found
+    for i, j in _facing(tips, tolerances):
+        tip = tips[i]
+        found = _link(tip, tips[j], bearings, tolerances, over_bearings, kept_rigid)
+        if found is not None and (tip.key not in best or found[0] < best[tip.key][0]):
+            best[tip.key] = found
     links = []
     for key, (_, link) in sorted(best.items()):
         mutual = best.get(link.second)
         if mutual is not None and mutual[1].second == key and key < link.second:
             links.append(link)
     return links
+
+
+def _facing(tips: list[_Tip], tolerances: Tolerances) -> Iterator[tuple[int, int]]:
+    """Pairs of ends that are near, point at each other and lie on one line in plan."""
+    points = np.array([tip.point for tip in tips]).reshape(-1, 3)
+    outward = np.array([tip.outward for tip in tips]).reshape(-1, 3)
+    reach = np.array([_WIDEST, _WIDEST, 0.5])
+    i, j = overlapping(np.hstack([points - reach, points + reach]), np.hstack([points, points]))
+    against = np.einsum("nk,nk->n", outward[i], outward[j]) <= -math.cos(tolerances.collinear)
+    i, j = i[against], j[against]
+    apart = points[j] - points[i]
+    flat = np.hypot(outward[i, 0], outward[i, 1])
+    side = np.abs(apart[:, 0] * outward[i, 1] - apart[:, 1] * outward[i, 0])
+    near = (i // 2 != j // 2) & (side <= flat * tolerances.offset * 1.01)
+    return zip(i[near].tolist(), j[near].tolist(), strict=True)
 
 
 def _tip(beam: Beam, end: int) -> _Tip:

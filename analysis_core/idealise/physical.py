@@ -8,7 +8,7 @@ from dataclasses import dataclass
 
 from analysis_core.building import AxisMember, Building, Carrier
 from analysis_core.idealise.beams import Beam, beam_of
-from analysis_core.idealise.bearings import Bearing, Surroundings, kind_of
+from analysis_core.idealise.bearings import Bearing, find_bearings, kind_of
 from analysis_core.idealise.chains import End, Link, chains, link_ends
 from analysis_core.idealise.draft import Draft, DraftJoint
 from analysis_core.idealise.legs import Legs
@@ -43,8 +43,7 @@ def physical_scheme(
     """Return the drafts of a physical building with the bearings found around them."""
     tolerances = settings.tolerances
     beams, posts = _sorted_out(building, settings, log)
-    surroundings = Surroundings((*building.carriers, *posts), beams, tolerances)
-    bearings = {beam.id: surroundings.bearings_of(beam) for beam in beams}
+    bearings = find_bearings(beams, (*building.carriers, *posts), tolerances)
     links = link_ends(
         beams,
         bearings,

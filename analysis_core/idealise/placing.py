@@ -21,31 +21,28 @@ _NEAR = 1e-6
 
 @dataclass(frozen=True, slots=True)
 class Seat:
-    """One bar of a member in one draft, by its number there."""
+    """One bar of a member in one draft, by its number there.
+
+    ``low`` and ``high`` are the lowest and highest station of the member on it, ``length`` its
+    length, ``stretch`` the metres of member per metre of it, ``way`` its direction (right, up).
+    """
 
     draft: Draft
     number: int
     bar: Bar
+    low: float
+    high: float
+    length: float
+    stretch: float
+    way: Pair
 
-    @property
-    def low(self) -> float:
-        """Lowest station of the member on this bar."""
-        return min(self.bar.station_start, self.bar.station_end)
-
-    @property
-    def high(self) -> float:
-        """Highest station of the member on this bar."""
-        return max(self.bar.station_start, self.bar.station_end)
-
-    @property
-    def length(self) -> float:
-        """Length of the bar, m."""
-        return self.draft.length(self.bar)
-
-    @property
-    def stretch(self) -> float:
-        """Metres of member per metre of bar."""
-        return (self.high - self.low) / self.length
+    @classmethod
+    def of(cls, draft: Draft, number: int) -> Seat:
+        """Return the seat of a bar."""
+        bar = draft.bars[number]
+        low, high = sorted((bar.station_start, bar.station_end))
+        size = draft.length(bar)
+        return cls(draft, number, bar, low, high, size, (high - low) / size, draft.direction(bar))
 
     def position(self, station: float) -> float:
         """Return the place on the bar of a station of the member, kept within the bar."""
@@ -54,7 +51,7 @@ class Seat:
 
     def local(self, force: Pair) -> Pair:
         """Return (transverse, axial) of a force (right, up): see the sketch in ``model``."""
-        cos, sin = self.draft.direction(self.bar)
+        cos, sin = self.way
         across, lengthwise = force[0] * sin - force[1] * cos, force[0] * cos + force[1] * sin
         nothing = 1e-12 * (abs(force[0]) + abs(force[1]))  # what rounding leaves of a zero
         return (
@@ -77,7 +74,7 @@ class Placer:
             self._numbers[id(draft)] = index
             for number, bar in enumerate(draft.bars):
                 by_draft = self._seats.setdefault(bar.member.global_id, {})
-                by_draft.setdefault(index, []).append(Seat(draft, number, bar))
+                by_draft.setdefault(index, []).append(Seat.of(draft, number))
         for by_draft in self._seats.values():
             for seats in by_draft.values():
                 seats.sort(key=lambda seat: seat.low)

@@ -50,6 +50,7 @@ class Chain:
     end: float = 0.0
     first: float = 0.0
     """Where the first joint of its draft lies."""
+    _starts: dict[str, tuple[float, float]] = field(default_factory=dict)
 
     def run(self, point: Point) -> float:
         """Return how far along the chain's axis a point lies."""
@@ -57,11 +58,19 @@ class Chain:
 
     def sense(self, beam: Beam) -> float:
         """Return 1 where a beam is drawn along the chain, -1 where against it."""
-        return 1.0 if dot(beam.direction, self.direction) > 0.0 else -1.0
+        return self._drawn(beam)[1]
 
     def run_of(self, beam: Beam, place: float) -> float:
         """Return how far along the chain a place of a beam (measured in plan) lies."""
-        return self.run(beam.member.start) + self.sense(beam) * beam.station(place)
+        start, sense = self._drawn(beam)
+        return start + sense * beam.station(place)
+
+    def _drawn(self, beam: Beam) -> tuple[float, float]:
+        found = self._starts.get(beam.id)
+        if found is None:
+            sense = 1.0 if dot(beam.direction, self.direction) > 0.0 else -1.0
+            found = self._starts[beam.id] = (self.run(beam.member.start), sense)
+        return found
 
 
 def chain_of(
