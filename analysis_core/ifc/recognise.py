@@ -139,7 +139,7 @@ class _Upright:
         if len(middle) == 1 and len(left) == len(right) == 2:
             attempts = (self._i_section,)
         elif len(middle) == 1 and len(left) == len(right) == 1:
-            attempts = (self._tee, self._angle, self._zed, self._trapezium)
+            attempts = (self._i_section, self._tee, self._angle, self._zed, self._trapezium)
         elif len(middle) == 1 and {len(left), len(right)} == {1, 2}:
             attempts = (self._channel, self._lipped_channel)
         for attempt in attempts:
@@ -162,9 +162,10 @@ class _Upright:
         (a, b), axis = middle[0], self.x0 + 0.5 * self.width
         if not a < axis < b or abs(0.5 * (a + b) - axis) > 0.02 * self.width:
             return None
-        quarter = self._up_and_down(self.x0 + 0.25 * self.width)
-        if len(quarter) != 2:
-            quarter = left
+        chords = [self._up_and_down(a - share * (a - self.x0)) for share in (0.5, 0.35, 0.2)]
+        quarter = next((chord for chord in chords if len(chord) == 2), [])
+        if not quarter:
+            return None
         bottom, top = (high - low for low, high in quarter)
         widths = [
             sum(q - p for p, q in self._across(y))
@@ -261,7 +262,9 @@ class _Upright:
         t = 0.5 * (other + thickness)
         corners = [(0.0, 0.0), (w, 0.0), (w, t), (t, t), (t, h), (0.0, h)]
         d = {"width": w, "depth": h, "thickness": t, "fillet_radius": fillet}
-        return ("angle", d, 0.0) if self._agrees(corners, (3,), fillet, (2, 4)) else None
+        # Toes rounded by a few chords weigh more in a thin angle than elsewhere.
+        like = self._agrees(corners, (3,), fillet, (2, 4), within=2.0 * _AGREEMENT)
+        return ("angle", d, 0.0) if like else None
 
     def _zed(
         self, left: list[Interval], right: list[Interval], middle: list[Interval]
@@ -295,8 +298,10 @@ class _Upright:
         t = b - a
         on_right = a - self.x0 < self.x1 - b
         lips = right if on_right else left
-        lip = 0.5 * sum(high - low for low, high in lips)
-        if len(lips) != 2 or lip < 1.2 * t or min(a - self.x0, self.x1 - b) > 0.02 * w:
+        if len(lips) != 2:
+            return None
+        lip = 0.5 * (lips[0][1] - self.y0 + self.y1 - lips[1][0])
+        if lip < 1.2 * t or min(a - self.x0, self.x1 - b) > 0.02 * w:
             return None
         half = [(0.0, 0.0), (w, 0.0), (w, lip), (w - t, lip), (w - t, t), (t, t)]
         corners = half + [(x, h - y) for x, y in reversed(half)]
@@ -326,13 +331,21 @@ class _Upright:
         return "trapezium", d, 0.0
 
     def _fillet(self, sharp_area: float, count: int) -> float | None:
-        """Radius of ``count`` equal fillets that make up the area; None if that cannot be."""
+        """Radius of ``count`` equal fillets that make up the area; None if that cannot be.
+
+        Where material is missing instead, toes of that radius are assumed (at least two).
+        """
         if self.inner_radius:
             return self.inner_radius
-        missing = (self.real.area - sharp_area) / (count * (1.0 - 0.25 * math.pi))
-        if missing < -0.02 * self.real.area or missing > (0.5 * min(self.width, self.depth)) ** 2:
+        spandrel = 1.0 - 0.25 * math.pi
+        missing = (self.real.area - sharp_area) / spandrel
+        if missing < 0.0:
+            toe = math.sqrt(-missing / max(count, 2))
+            self.toe_radius = self.toe_radius or toe
+            return 0.0 if -missing * spandrel < 0.05 * self.real.area else None
+        radius = math.sqrt(missing / count)
+        if radius > 0.5 * min(self.width, self.depth):
             return None
-        radius = math.sqrt(max(missing, 0.0))
         return radius if radius > 1e-3 * min(self.width, self.depth) else 0.0
 
     def _agrees(
@@ -342,17 +355,18 @@ class _Upright:
         radius: float,
         toes: tuple[int, ...],
         mirrored: bool = False,
+        within: float = _AGREEMENT,
     ) -> bool:
         radii = dict.fromkeys(filleted, radius) | dict.fromkeys(toes, self.toe_radius)
         rows = [(x, y, radii.get(i, 0.0)) for i, (x, y) in enumerate(corners)]
         if mirrored:
             rows += [(-x, y, r) for x, y, r in reversed(rows)]
-        return self._like(outline.anticlockwise(outline.rounded(rows)))
+        return self._like(outline.anticlockwise(outline.rounded(rows)), within)
 
-    def _like(self, rows: Floats) -> bool:
+    def _like(self, rows: Floats, within: float = _AGREEMENT) -> bool:
         drawn = outline.moments((rows,))
         return all(
-            abs(mine - theirs) <= _AGREEMENT * theirs
+            abs(mine - theirs) <= within * theirs
             for mine, theirs in (
                 (drawn.area, self.real.area),
                 (drawn.xx, self.real.xx),

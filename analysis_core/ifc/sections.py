@@ -189,7 +189,7 @@ def section_of(profile: Profile, matrix: Matrix = IDENTITY) -> Section:
         inertia_lateral=moments.xx,
         inertia_product=moments.xy,
         torsion=profile.torsion * scale**4,
-        shear_area=slices.shear_area(strips, moments.y, moments.yy),
+        shear_area=_shear_area(drawn, strips, moments),
         depth=top - bottom,
         width=right - left,
         top=top - moments.y,
@@ -224,6 +224,20 @@ def _roll(roll: float, matrix: Matrix) -> float:
     across, along = a * x + b * y, c * x + d * y
     angle = math.atan2(-across, along)
     return angle if abs(angle) > 1e-6 else 0.0
+
+
+def _shear_area(drawn: Drawn, strips: slices.Slices, moments: Moments) -> float:
+    """Effective shear area along z: by energy, see ``slices.shear_area``.
+
+    In a round tube shear runs along the wall, not straight down: G. R. Cowper, Journal of
+    Applied Mechanics 33, 1966, for a Poisson ratio of zero; half the area where thin.
+    """
+    if drawn.shape != "tube":
+        return slices.shear_area(strips, moments.y, moments.yy)
+    d = drawn.dimensions
+    ratio = (1.0 - 2.0 * d["wall_thickness"] / d["diameter"]) ** 2
+    both = (1.0 + ratio) ** 2
+    return moments.area * 6.0 * both / (7.0 * both + 20.0 * ratio)
 
 
 def _torsion_constant(drawn: Drawn, moments: Moments) -> float:
