@@ -103,10 +103,12 @@ def distribute(
     ``stop``: the largest unbalance to let stand, as a part of the largest fixed-end moment.
     ``order``: "largest" unbalance first, joint by joint; "together", all joints at once;
     "alternate", every second joint.  ``short_cuts``: never lock ends whose moment is known, and
-    write down half of what is symmetric (see ``columns``).  Translations can magnify what is left over: the stop is
-    tightened tenfold until the sums agree with the exact moments within the stop that was asked
-    for; ``stop`` of the record says which was used.  Raises what ``solve`` raises, and
-    ConvergenceError where ``max_sweeps`` releases of every joint do not suffice.
+    write down half of what is symmetric (see ``columns``).
+
+    Translations can magnify what is left over: the stop is tightened tenfold until the sums agree
+    with the exact moments within the stop that was asked for; ``stop`` of the record says which
+    was used.  Raises what ``solve`` raises, and ConvergenceError where ``max_sweeps`` releases of
+    every joint do not suffice.
     """
     if not stop > 0.0:
         raise ValueError(f"stop must be positive; got {stop}")
