@@ -1,5 +1,7 @@
 """What the 3D view draws, as numbers."""
 
+from dataclasses import replace
+
 import demo
 import numpy as np
 import pytest
@@ -10,6 +12,7 @@ from freecad.spanledger.present.scene import (
     filled,
     scene_of,
     support_lines,
+    supports_of,
     symbol_size,
 )
 
@@ -42,10 +45,10 @@ def test_the_area_of_a_filled_diagram_is_the_integral_of_its_curve(scene):
 
     drawn = filled(scene, ordinates, factor=1000.0, positive=True)
 
-    a, b, c = drawn.triangles.transpose(1, 0, 2)
-    area = 0.5 * np.linalg.norm(np.cross(b - a, c - a), axis=1).sum()
+    a, b, c, d = drawn.corners.transpose(1, 0, 2)
+    area = 0.5 * np.linalg.norm(np.cross(c - a, d - b), axis=1).sum()  # plane quadrilaterals
     assert area == pytest.approx(0.5 * 6000.0 * 2000.0)
-    assert set(drawn.member.tolist()) == {0}
+    assert drawn.corners[..., 0].max() <= 6000.0
 
 
 def test_a_curve_that_changes_sign_is_split_at_its_zero_and_crosses_no_face(scene):
@@ -55,25 +58,27 @@ def test_a_curve_that_changes_sign_is_split_at_its_zero_and_crosses_no_face(scen
     above = filled(scene, ordinates, 100.0, positive=False)
     below = filled(scene, ordinates, 100.0, positive=True)
 
-    assert below.triangles[..., 0].min() == pytest.approx(2000.0)
-    assert above.triangles[..., 0].max() == pytest.approx(2000.0)
-    assert below.triangles[..., 2].min() == pytest.approx(3500.0 - 200.0)  # sagging hangs below
-    assert above.triangles[..., 2].max() == pytest.approx(3500.0 + 100.0)
+    assert below.corners[..., 0].min() == pytest.approx(2000.0)
+    assert above.corners[..., 0].max() == pytest.approx(2000.0)
+    assert below.corners[..., 2].min() == pytest.approx(3500.0 - 200.0)  # sagging hangs below
+    assert above.corners[..., 2].max() == pytest.approx(3500.0 + 100.0)
 
 
 def test_nothing_is_filled_where_there_is_no_effect(scene):
-    assert len(filled(scene, np.zeros((3, 7)), 100.0, positive=True).triangles) == 0
+    assert len(filled(scene, np.zeros((3, 7)), 100.0, positive=True).corners) == 0
 
 
 def test_every_support_has_a_symbol_below_its_joint():
     model = demo.outcome().model
     size = symbol_size(scene_of(model.lines))
 
-    lines = support_lines(model, size)
+    points, counts = support_lines(supports_of(model.lines), size)
 
-    assert len(lines) == 3 * 2 + 2 * 2  # wedge and ground; block and cross
+    assert len(counts) == 3 * 2 + 2 * 2  # wedge and ground; block and cross
+    assert counts.sum() == len(points)
     assert size == pytest.approx(0.05 * 5000.0)
-    assert max(points[:, 2].max() for points in lines) <= 3500.0 + size
+    assert points[:, 2].max() <= 3500.0 + size
+    assert set(points[:, 1]) == {0.0, 3000.0}  # in the planes of the two lines
 
 
 def test_the_largest_ordinate_is_drawn_a_third_of_a_span_high(scene):
@@ -89,9 +94,30 @@ def test_a_joint_that_nothing_holds_has_no_symbol():
         Joint(1, 2.0, 0.0, (2.0, 0.0, 0.0)),
     )
     line = Line("L", joints, (Member(0, 0, 1, (Piece(2.0, (1.0,)),)),))
-    model = demo.outcome().model
-    from dataclasses import replace
 
-    drawn = support_lines(replace(model, lines=(line,)), 100.0)
+    _, counts = support_lines(supports_of([line]), 100.0)
 
-    assert len(drawn) == 3  # coil, ground and spiral of the sprung joint alone
+    assert len(counts) == 3  # coil, ground and spiral of the sprung joint alone
+
+
+def test_a_model_far_out_is_drawn_near_the_origin_and_says_by_how_much():
+    lines = demo.outcome().model.lines
+    far = [
+        replace(
+            line,
+            joints=tuple(
+                replace(j, point=(j.point[0] + 1.186e6, j.point[1], j.point[2]))
+                for j in line.joints
+            ),
+        )
+        for line in lines
+    ]
+
+    scene, near = scene_of(far), scene_of(lines)
+
+    assert scene.ends + np.array(scene.origin) == pytest.approx(
+        near.ends + np.array([1.186e9, 0.0, 0.0])
+    )
+    assert np.abs(scene.ends).max() < 1e5
+    assert supports_of(far, scene.origin).at[0, 0] == pytest.approx(scene.ends[0, 0, 0])
+    assert near.origin == (0.0, 0.0, 0.0)

@@ -13,7 +13,7 @@ import FreeCAD
 import numpy as np
 
 from .present.diagrams import Ordinates
-from .present.scene import Scene, diagram_height, scene_of, support_lines, symbol_size
+from .present.scene import Scene, Supports, diagram_height, scene_of, supports_of
 
 TYPE = "Spanledger::BeamLines"
 NAME = "BeamLines"
@@ -32,14 +32,18 @@ _PROPERTIES = (
     ("App::PropertyVectorList", "Down", "Members", "Direction of positive deflection"),
     ("App::PropertyIntegerList", "MemberLine", "Members", "Line that each member belongs to"),
     ("App::PropertyStringList", "Elements", "Members", "GlobalId of each member's element"),
-    ("App::PropertyVectorList", "SupportPoints", "Supports", "Corners of the support symbols"),
-    ("App::PropertyIntegerList", "SupportCounts", "Supports", "Corners per polyline"),
+    ("App::PropertyVectorList", "SupportAt", "Supports", "Joints that something holds"),
+    ("App::PropertyVectorList", "SupportRight", "Supports", "Direction of the line at each"),
+    ("App::PropertyFloatList", "SupportStiffness", "Supports", "Vertical, rotation; -1 is rigid"),
     ("App::PropertyString", "Shown", "Diagram", "What the diagram shows"),
     ("App::PropertyString", "Quantity", "Diagram", "moment, shear or deflection"),
     ("App::PropertyInteger", "Stations", "Diagram", "Ordinates per member"),
     ("App::PropertyFloatList", "Upper", "Diagram", "Largest ordinates"),
     ("App::PropertyFloatList", "Lower", "Diagram", "Smallest ordinates"),
     ("App::PropertyFloat", "Height", "Diagram", "Millimetres drawn per unit of the ordinate"),
+    # Written last: drawing follows these alone, once all that belongs together is there.
+    ("App::PropertyInteger", "LinesDrawn", "Drawing", "Counts how often lines were written"),
+    ("App::PropertyInteger", "DiagramDrawn", "Drawing", "Counts how often a diagram was written"),
 )
 
 
@@ -83,7 +87,7 @@ def find_beam_lines(document: Any) -> Any | None:
 def show_outcome(obj: Any, outcome: Any, states: list[str]) -> Scene:
     """Write the lines of a run into the object; the diagram is emptied."""
     scene = scene_of(outcome.model.lines)
-    polylines = support_lines(outcome.model, symbol_size(scene), scene.origin)
+    supports = supports_of(outcome.model.lines, scene.origin)
     obj.Schema = outcome.schema
     obj.Origin = FreeCAD.Vector(*scene.origin)
     obj.Fingerprint = outcome.fingerprint
@@ -94,10 +98,12 @@ def show_outcome(obj: Any, outcome: Any, states: list[str]) -> Scene:
     obj.Down = _vectors(scene.down)
     obj.MemberLine = scene.line_index.tolist()
     obj.Elements = list(scene.elements)
-    obj.SupportPoints = _vectors(np.concatenate(polylines)) if polylines else []
-    obj.SupportCounts = [len(points) for points in polylines]
+    obj.SupportAt, obj.SupportRight = _vectors(supports.at), _vectors(supports.right)
+    stiffness = np.where(np.isinf(supports.stiffness), -1.0, supports.stiffness)
+    obj.SupportStiffness = stiffness.ravel().tolist()  # a saved document knows no infinity
     obj.Stations, obj.Upper, obj.Lower, obj.Shown = 0, [], [], ""
     obj.Label = outcome.file
+    obj.LinesDrawn += 1
     return scene
 
 
@@ -109,6 +115,7 @@ def show_diagram(obj: Any, scene: Scene, ordinates: Ordinates) -> None:
     obj.Shown = ordinates.title
     obj.Upper = ordinates.upper.ravel().tolist()
     obj.Lower = ordinates.lower.ravel().tolist()
+    obj.DiagramDrawn += 1
 
 
 def scene_in(obj: Any) -> Scene:
@@ -123,8 +130,18 @@ def scene_in(obj: Any) -> Scene:
     )
 
 
+def supports_in(obj: Any) -> Supports:
+    """Return the supports that the object keeps."""
+    stiffness = np.array(obj.SupportStiffness, dtype=np.float64).reshape(-1, 2)
+    return Supports(
+        at=_array(obj.SupportAt),
+        right=_array(obj.SupportRight),
+        stiffness=np.where(stiffness < 0.0, np.inf, stiffness),
+    )
+
+
 def _vectors(points: np.ndarray) -> list[Any]:
-    return [FreeCAD.Vector(*point) for point in points.tolist()]
+    return [FreeCAD.Vector(x, y, z) for x, y, z in points.tolist()]
 
 
 def _array(vectors: Any) -> np.ndarray:

@@ -136,6 +136,7 @@ class LineList(QtWidgets.QWidget):
         self.tree.setAllColumnsShowFocus(True)
         self.tree.setAlternatingRowColors(True)
         self.tree.setIndentation(12)
+        self.tree.header().setResizeContentsPrecision(60)  # rows looked at for a column's width
         self.tree.setSortingEnabled(True)
         self.tree.sortByColumn(0, Qt.SortOrder.AscendingOrder)
         self.tree.setAccessibleName(translate("Spanledger", "Lines by storey"))

@@ -9,7 +9,7 @@ import FreeCADGui
 
 from .. import document
 from ..present.diagrams import View, ordinates_of
-from ..present.scene import Scene
+from ..present.scene import Scene, drawn_stations
 from ..qt import QtCore
 from ..session import Session
 from ..texts import translate
@@ -43,8 +43,10 @@ class Picture:
         """Draw a quantity along all lines."""
         obj = document.find_beam_lines(FreeCAD.getDocument(name))
         if obj is not None and name in self._scenes:
-            ordinates = ordinates_of(session.outcome.lines, view, quantity)
-            document.show_diagram(obj, self._scenes[name], ordinates)
+            scene = self._scenes[name]
+            stations = drawn_stations(len(scene.ends))
+            ordinates = ordinates_of(session.outcome.lines, view, quantity, stations)
+            document.show_diagram(obj, scene, ordinates)
 
     def show_states(self, name: str, states: list[str]) -> None:
         """Write down the states of the lines."""

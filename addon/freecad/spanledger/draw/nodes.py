@@ -13,7 +13,9 @@ Colour = tuple[float, float, float]
 MOST_LABELS = 60
 TRANSPARENCY = 0.35
 BODY_TRANSPARENCY = 0.88
-COLOUR_CHILD = 2
+MOST_OUTLINED = 60_000  # quadrilaterals; beyond, outlines cost more than they show
+_TRIANGLES = np.array([0, 1, 2, 0, 2, 3], dtype=np.int32)
+_CURVE = np.array([3, 2], dtype=np.int32)
 DEPTH_STEP = 2e-4
 
 
@@ -38,13 +40,7 @@ class Lines:
         self.node.addChild(self._points)
         if casing is not None:
             self.node.addChild(_stroke(casing, width + 3.0, self._lines, nearer=1, pickable=False))
-        stroke = _stroke(colour, width, self._lines, nearer=nearer, pickable=pickable)
-        self._colour = stroke.getChild(COLOUR_CHILD)
-        self.node.addChild(stroke)
-
-    def set_colour(self, colour: Colour) -> None:
-        """Draw in another colour."""
-        self._colour.rgb = colour
+        self.node.addChild(_stroke(colour, width, self._lines, nearer=nearer, pickable=pickable))
 
     def set_segments(self, ends: np.ndarray) -> None:
         """Draw straight segments (n, 2, 3)."""
@@ -55,45 +51,51 @@ class Lines:
         _set_points(self._points, points)
         numbers = np.arange(len(points), dtype=np.int32)
         ends = np.cumsum(np.asarray(counts, dtype=np.int64))
-        _set_index(self._lines.coordIndex, np.insert(numbers, ends, -1))
+        _set_numbers(self._lines.coordIndex, np.insert(numbers, ends, -1))
 
 
 class Faces:
-    """A batch of see-through triangles with the outline of their curve."""
+    """A batch of see-through quadrilaterals with the outline of their curve."""
 
     def __init__(self, colour: Colour, transparency: float = TRANSPARENCY) -> None:
         self.node = coin.SoSeparator()
         hints = coin.SoShapeHints()
         hints.vertexOrdering = coin.SoShapeHints.UNKNOWN_ORDERING  # seen from both sides
-        material = coin.SoMaterial()
-        material.diffuseColor = colour
-        material.transparency = transparency
+        blend = coin.SoTransparencyType()
+        blend.value = coin.SoTransparencyType.DELAYED_BLEND  # sorting each face is slow
         pick = coin.SoPickStyle()
         pick.style = coin.SoPickStyle.UNPICKABLE
-        self._material = material
+        self._material, self._base = coin.SoMaterial(), coin.SoMaterial()
+        self._material.transparency = transparency
+        style = coin.SoDrawStyle()
+        style.lineWidth = 1.5
         self._points, self._faces = coin.SoCoordinate3(), coin.SoIndexedFaceSet()
-        for node in (pick, hints, material, self._points, self._faces):
+        self._outline = coin.SoIndexedLineSet()
+        for node in (
+            pick, hints, blend, self._points, self._material, self._faces, self._base, style,
+            self._outline,
+        ):  # fmt: skip
             self.node.addChild(node)
-        self._outline = Lines(colour, 1.5, pickable=False)
-        self.node.addChild(self._outline.node)
+        self.set_colour(colour)
 
     def set_colour(self, colour: Colour) -> None:
         """Show faces and outline in another colour."""
         self._material.diffuseColor = colour
-        self._outline.set_colour(colour)
+        self._base.diffuseColor = colour
 
     def set_filled(self, drawn: Filled) -> None:
-        """Draw the triangles and the outline of a diagram."""
-        _set_points(self._points, drawn.triangles.reshape(-1, 3))
-        corners = np.arange(3 * len(drawn.triangles), dtype=np.int32).reshape(-1, 3)
-        ends = np.full((len(corners), 1), -1, dtype=np.int32)
-        _set_index(self._faces.coordIndex, np.hstack([corners, ends]).ravel())
-        self._outline.set_segments(drawn.outline)
+        """Draw the quadrilaterals and the outline of a diagram."""
+        count = len(drawn.corners)
+        _set_points(self._points, drawn.corners.reshape(-1, 3))
+        first = 4 * np.arange(count, dtype=np.int32)[:, None]
+        # Two triangles each, and the side that is the curve.
+        _set_index(self._faces.coordIndex, (first + _TRIANGLES).reshape(-1, 3))
+        outlined = first if count <= MOST_OUTLINED else first[:0]
+        _set_index(self._outline.coordIndex, outlined + _CURVE)
 
     def clear(self) -> None:
         """Draw nothing."""
-        none = np.zeros((0, 3, 3))
-        self.set_filled(Filled(none, np.zeros(0, dtype=np.int64), np.zeros((0, 2, 3))))
+        self.set_filled(Filled(np.zeros((0, 4, 3))))
 
 
 class Body:
@@ -124,8 +126,7 @@ class Body:
         """Show triangles (t, 3) and edges (e, 2) between points (n, 3)."""
         _set_points(self._points, points)
         for field, rows in ((self._faces.coordIndex, triangles), (self._edges.coordIndex, edges)):
-            ends = np.full((len(rows), 1), -1, dtype=np.int32)
-            _set_index(field, np.hstack([rows, ends]).ravel())
+            _set_index(field, rows)
 
 
 class Labels:
@@ -169,7 +170,7 @@ def _stroke(
     style.lineWidth = width
     for node in (pick, base, style, lines):
         stroke.addChild(node)
-    return stroke  # its colour is the child COLOUR_CHILD
+    return stroke
 
 
 def _set_points(node: coin.SoCoordinate3, points: np.ndarray) -> None:
@@ -179,7 +180,13 @@ def _set_points(node: coin.SoCoordinate3, points: np.ndarray) -> None:
         node.point.setValues(0, len(points), np.ascontiguousarray(points, dtype=np.float32))
 
 
-def _set_index(field: coin.SoMFInt32, values: np.ndarray) -> None:
+def _set_index(field: coin.SoMFInt32, rows: np.ndarray) -> None:
+    """Set the corners (n, k) of n faces or lines, each closed by -1."""
+    ends = np.full((len(rows), 1), -1, dtype=np.int32)
+    _set_numbers(field, np.hstack([rows, ends]).ravel())
+
+
+def _set_numbers(field: coin.SoMFInt32, values: np.ndarray) -> None:
     field.setNum(len(values))
     if len(values):
         field.setValues(0, len(values), np.ascontiguousarray(values, dtype=np.int32))

@@ -11,10 +11,10 @@ from typing import Any
 import numpy as np
 from pivy import coin
 
-from ..document import scene_in
+from ..document import scene_in, supports_in
 from ..present.layout import DOWNWARD
 from ..present.look import VIEW
-from ..present.scene import Scene, filled
+from ..present.scene import Scene, filled, support_lines, symbol_size
 from .nodes import Body, Faces, Labels, Lines
 
 LINES, DIAGRAMS = "Lines", "Lines and diagrams"
@@ -66,8 +66,8 @@ class BeamLinesView:
         """Draw what the object keeps."""
         self.scene = scene_in(obj)
         self.lines.set_segments(self.scene.ends)
-        points = np.array([tuple(p) for p in obj.SupportPoints]).reshape(-1, 3)
-        self.supports.set_polylines(points, obj.SupportCounts)
+        size = symbol_size(self.scene)
+        self.supports.set_polylines(*support_lines(supports_in(obj), size))
         self.fill_diagram(obj)
         self.choose(None)
 
@@ -121,9 +121,9 @@ class BeamLinesView:
     def updateData(self, obj: Any, name: str) -> None:  # noqa: N802  # FreeCAD's name
         if getattr(self, "scene", None) is None:
             return
-        if name == "Lower":  # written last
+        if name == "DiagramDrawn":
             self.fill_diagram(obj)
-        elif name == "SupportCounts":
+        elif name == "LinesDrawn":
             self.fill(obj)
 
     def getDisplayModes(self, _view_object: Any) -> list[str]:  # noqa: N802

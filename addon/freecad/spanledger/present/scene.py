@@ -12,7 +12,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.model import Line, LineModel, Support
+from analysis_core.model import Line, Point, Support
 
 from .symbols import support_symbol
 
@@ -22,6 +22,7 @@ MM = 1000.0
 SYMBOL_PART_OF_SPAN = 0.05
 # Single precision resolves 1 mm at 10 km; further out the drawing is moved by whole 100 m.
 FAR, ROUND = 1e7, 1e5
+MOST_ORDINATES = 60_000
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -82,26 +83,52 @@ def symbol_size(scene: Scene) -> float:
     return float(SYMBOL_PART_OF_SPAN * np.median(lengths))
 
 
-def support_lines(
-    model: LineModel, size: float, origin: tuple[float, float, float] = (0.0, 0.0, 0.0)
-) -> list[Floats]:
-    """Return the symbols of all supports as polylines (n, 3) in mm, in the plane of each line."""
-    drawn = []
-    for line in model.lines:
-        right = np.array(line.axis)
+@dataclass(frozen=True, slots=True, eq=False)
+class Supports:
+    """The supported joints of all lines, S of them.
+
+    at (S, 3)  mm, less the scene's origin;  right (S, 3)  horizontal direction of the line;
+    stiffness (S, 2)  vertical N/m and rotational N·m/rad
+    """
+
+    at: Floats
+    right: Floats
+    stiffness: Floats
+
+
+def supports_of(lines: Sequence[Line], origin: Point = (0.0, 0.0, 0.0)) -> Supports:
+    """Return the joints that something holds."""
+    at, right, stiffness = [], [], []
+    for line in lines:
         for joint in line.joints:
-            drawn += _placed(
-                joint.support, MM * np.array(joint.point) - np.array(origin), right, size
-            )
-    return drawn
+            if joint.support is not None:
+                at.append(joint.point)
+                right.append(line.axis)
+                stiffness.append((joint.support.vertical, joint.support.rotation))
+    return Supports(
+        MM * np.array(at).reshape(-1, 3) - np.array(origin),
+        np.array(right, dtype=np.float64).reshape(-1, 3),
+        np.array(stiffness, dtype=np.float64).reshape(-1, 2),
+    )
 
 
-def _placed(support: Support | None, at: Floats, right: Floats, size: float) -> list[Floats]:
-    up = np.array((0.0, 0.0, 1.0))
-    return [
-        at + size * (np.outer(uv[:, 0], right) + np.outer(uv[:, 1], up))
-        for uv in (np.array(polyline) for polyline in support_symbol(support))
-    ]
+def support_lines(supports: Supports, size: float) -> tuple[Floats, Integers]:
+    """Return all symbols as polylines: points (P, 3) in mm, and how many belong to each.
+
+    Supports that are held alike share one symbol, so that thousands are placed at once.
+    """
+    points, counts = [np.zeros((0, 3))], [np.zeros(0, dtype=np.int64)]
+    alike, kind = np.unique(supports.stiffness, axis=0, return_inverse=True)
+    for number, (vertical, rotation) in enumerate(alike):
+        here = kind.ravel() == number
+        at, right = supports.at[here], supports.right[here]
+        for polyline in support_symbol(Support(vertical=vertical, rotation=rotation)):
+            across, up = size * np.array(polyline).T
+            placed = at[:, None, :] + across[None, :, None] * right[:, None, :]
+            placed[:, :, 2] += up
+            points.append(placed.reshape(-1, 3))
+            counts.append(np.full(len(at), len(polyline), dtype=np.int64))
+    return np.concatenate(points), np.concatenate(counts)
 
 
 def diagram_height(scene: Scene, *ordinates: Floats) -> float:
@@ -115,14 +142,13 @@ def diagram_height(scene: Scene, *ordinates: Floats) -> float:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Filled:
-    """A filled diagram: triangles between the axis and the curve, and the curve itself.
+    """A filled diagram: quadrilaterals between the axis and the curve.
 
-    triangles (T, 3, 3) mm, with the member (T,) that each belongs to; outline (K, 2, 3) mm.
+    corners (Q, 4, 3) in mm: along the axis from 0 to 1, back along the curve from 2 to 3; a corner
+    of a triangle comes twice.
     """
 
-    triangles: Floats
-    member: Integers
-    outline: Floats
+    corners: Floats
 
 
 def filled(scene: Scene, ordinates: Floats, factor: float, *, positive: bool) -> Filled:
@@ -140,16 +166,19 @@ def filled(scene: Scene, ordinates: Floats, factor: float, *, positive: bool) ->
     xa, xb = x[step], x[step + 1]
     with np.errstate(divide="ignore", invalid="ignore"):
         zero = xa + (xb - xa) * a / (a - b)
-    start = np.where(a < 0.0, zero, xa)
-    stop = np.where(b < 0.0, zero, xb)
+    corners = np.empty((len(member), 4, 3))
+    corners[:, 0] = _along(scene, member, np.where(a < 0.0, zero, xa))
+    corners[:, 1] = _along(scene, member, np.where(b < 0.0, zero, xb))
     side = factor if positive else -factor
-    base_a, base_b = _along(scene, member, start), _along(scene, member, stop)
-    top_a = base_a + (side * np.maximum(a, 0.0))[:, None] * scene.down[member]
-    top_b = base_b + (side * np.maximum(b, 0.0))[:, None] * scene.down[member]
-    triangles = np.concatenate(
-        [np.stack([base_a, base_b, top_b], axis=1), np.stack([base_a, top_b, top_a], axis=1)]
-    )
-    return Filled(triangles, np.concatenate([member, member]), np.stack([top_a, top_b], axis=1))
+    down = scene.down[member]
+    corners[:, 2] = corners[:, 1] + (side * np.maximum(b, 0.0))[:, None] * down
+    corners[:, 3] = corners[:, 0] + (side * np.maximum(a, 0.0))[:, None] * down
+    return Filled(corners)
+
+
+def drawn_stations(members: int) -> int:
+    """Return at how many stations a diagram is drawn: fewer where there are very many members."""
+    return max(9, min(21, MOST_ORDINATES // max(members, 1)))
 
 
 def _along(scene: Scene, member: Integers, part: Floats) -> Floats:

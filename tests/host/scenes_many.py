@@ -1,0 +1,87 @@
+"""Scenes with very many lines, and how long things take."""
+
+import sys
+import time
+from dataclasses import replace
+from pathlib import Path
+
+import FreeCAD
+import FreeCADGui
+from host_tools import QtWidgets, activate, picture_of_view, settle, widget
+from PySide import QtCore
+
+sys.path.append(str(Path(__file__).resolve().parents[1] / "addon"))
+MANY = 10_000
+
+
+def many_lines():
+    """Draw 10,000 lines, turn them, choose among them, filter them."""
+    began = time.perf_counter()
+    FreeCADGui.activateWorkbench("SpanledgerWorkbench")
+    start = time.perf_counter() - began
+    desk = activate()
+    from freecad.spanledger.session import Session
+
+    outcome = many_outcome()
+    doc = FreeCAD.newDocument("Many")
+    empty = frame_time()
+    session = Session(Path("many.ifc"), Path("many.yaml"))
+    session.receive(outcome)
+    desk.sessions[doc.Name] = session
+    found = {"start": start, "empty_frame": empty}
+    found["show"] = timed(lambda: desk._show_all(doc.Name))
+    found["show_again"] = timed(lambda: desk._show_all(doc.Name))
+    settle(1.0)
+    picture_of_view("many_view")
+    found["frame"] = frame_time()
+    found["choose"] = timed(lambda: desk.choose_line(7777))
+    words = widget(QtWidgets.QLineEdit, "SpanledgerFilter")
+    found["filter"] = timed(lambda: words.setText("roof"))
+    found["shown"] = desk.panels.list.model.shown()
+    box = widget(QtWidgets.QComboBox, "SpanledgerIn3D")
+    found["quantity"] = timed(lambda: box.setCurrentIndex(2))
+    return found
+
+
+def many_outcome():
+    """Return 10,000 lines of two and of one span, in a field of 100 by 100."""
+    import demo
+
+    first = demo.outcome()
+    results = []
+    for number in range(MANY):
+        result = first.lines[number % 2]
+        dx, dy, dz = 12.0 * (number % 100), 5.0 * (number // 100), 3.5 * (number % 2)
+        joints = tuple(
+            replace(j, point=(j.point[0] + dx, j.point[1] + dy, j.point[2] + dz))
+            for j in result.line.joints
+        )
+        line = replace(result.line, joints=joints, mark=f"N{number:05d}")
+        results.append(replace(result, line=line, fingerprint=f"f{number}"))
+    model = replace(first.model, lines=tuple(r.line for r in results))
+    return replace(first, model=model, lines=tuple(results))
+
+
+def timed(action):
+    began = time.perf_counter()
+    action()
+    QtWidgets.QApplication.processEvents()
+    return time.perf_counter() - began
+
+
+def frame_time(seconds=1.5):
+    """Return how long one picture takes while the view is turned."""
+    view = FreeCADGui.ActiveDocument.ActiveView
+    view.fitAll()
+    settle(0.5)
+    camera = view.getCameraNode()
+    from pivy import coin
+
+    turn = coin.SbRotation(coin.SbVec3f(0.0, 0.0, 1.0), 0.02)
+    frames, end = 0, time.perf_counter() + seconds
+    while time.perf_counter() < end:
+        camera.orientation = camera.orientation.getValue() * turn
+        view.redraw()
+        QtWidgets.QApplication.processEvents(QtCore.QEventLoop.ExcludeUserInputEvents)
+        frames += 1
+    return seconds / frames
