@@ -90,6 +90,9 @@ class AxisMember:
     element: str | None = None
     """GlobalId of the physical element that an analytical member stands for."""
     note: str = ""
+    end_stiffness: tuple[float | None, float | None] = (None, None)
+    """Rotational stiffness of the joints at its start and end, where an authoring tool states it
+    beyond doubt (physical route): 0 released, infinite rigid, else N·m/rad; None: not stated."""
 
 
 @dataclass(frozen=True, slots=True)

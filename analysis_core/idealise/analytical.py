@@ -12,8 +12,8 @@ from analysis_core.idealise.marks import put_marks
 from analysis_core.idealise.network import network_of
 from analysis_core.idealise.plane_groups import plane_groups
 from analysis_core.idealise.properties import PropertyTable
-from analysis_core.idealise.scheme import Rest, Scheme, body_of
-from analysis_core.model import FREE, RIGID
+from analysis_core.idealise.scheme import Rest, Scheme, body_of, stiffness_at
+from analysis_core.model import RIGID
 from analysis_core.settings import Settings
 
 
@@ -82,13 +82,9 @@ def _share_column(drafts: list[Draft], key: str) -> bool:
 def _touch(draft: Draft, key: str, table: PropertyTable) -> Touch:
     index = draft.joint_of[key]
     bars = [bar for bar in draft.bars if index in (bar.start, bar.end)]
-    section, material = table.of(bars[0].member).section, table.of(bars[0].member).material
-    rigidity = section.inertia * material.elastic_modulus if section and material else 0.0
     position = draft.joints[index].x
-    held = [j.x for j in draft.joints if j.vertical > FREE and abs(j.x - position) > 1e-6]
-    left = max((x for x in held if x < position), default=min(j.x for j in draft.joints))
-    right = min((x for x in held if x > position), default=max(j.x for j in draft.joints))
-    return Touch(draft.mark, position, len(bars) > 1, rigidity / max(right - left, 1e-6) ** 3)
+    stiffness = stiffness_at(draft, position, bars[0].member.global_id, table)
+    return Touch(draft.mark, position, len(bars) > 1, stiffness)
 
 
 def _rest(scheme: Scheme, contact: Contact, drafts: dict[str, Draft], log: Log) -> None:

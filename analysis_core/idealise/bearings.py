@@ -78,7 +78,7 @@ def find_bearings(
     known.sort(key=lambda carrier: carrier.global_id)
     found: dict[str, list[Bearing]] = {beam.id: [] for beam in beams}
     boxes = _boxes_of_beams(beams, tolerances)
-    for i, j in _pairs(boxes, _boxes_of_carriers(known)):
+    for i, j in _pairs(boxes, boxes_of_carriers(known)):
         found[beams[i].id].extend(_on_carrier(beams[i], known[j], tolerances))
     for i, j in _crossing_pairs(beams, boxes, tolerances):
         found[beams[i].id].extend(_on_beam(beams[i], beams[j], tolerances))
@@ -101,12 +101,13 @@ def _boxes_of_beams(beams: list[Beam], tolerances: Tolerances) -> Floats:
     return np.hstack([ends.min(axis=1) - around, ends.max(axis=1) + around])
 
 
-def _boxes_of_carriers(carriers: list[Carrier]) -> Floats:
+def boxes_of_carriers(carriers: Sequence[Carrier]) -> Floats:
+    """Return the bounding boxes of carriers that have an outline, (n, 6)."""
     rows = []
     for carrier in carriers:
         xs, ys = zip(*carrier.corners, strict=True)
         rows.append((min(xs), min(ys), carrier.bottom, max(xs), max(ys), carrier.top))
-    return np.array(rows).reshape(-1, 6)
+    return np.array(rows, float).reshape(-1, 6)
 
 
 def _crossing_pairs(

@@ -47,6 +47,13 @@ class _Tip:
         return self.beam.id, self.end
 
 
+@dataclass(frozen=True, slots=True)
+class _Rules:
+    over_bearings: bool
+    kept_rigid: frozenset[End]
+    loose: frozenset[End]
+
+
 def link_ends(
     beams: list[Beam],
     bearings: Mapping[str, list[Bearing]],
@@ -54,18 +61,21 @@ def link_ends(
     *,
     over_bearings: bool,
     kept_rigid: frozenset[End],
+    loose: frozenset[End] = frozenset(),
 ) -> list[Link]:
     """Return the pairs of collinear ends that go on as one line.
 
     Ends are joined where they meet within the joining tolerance (a splice), or over a bearing
     that both reach, unless ``over_bearings`` is off.  Beams that frame into the sides of another
     beam are not joined through it, unless the job file makes an end rigid (``kept_rigid``).
+    Ends that the model states as released (``loose``) end a line at a bearing.
     """
     tips = [_tip(beam, end) for beam in beams for end in (0, 1)]
     best: dict[End, tuple[float, Link]] = {}
+    rules = _Rules(over_bearings, kept_rigid, loose)
     for i, j in _facing(tips, tolerances):
         tip = tips[i]
-        found = _link(tip, tips[j], bearings, tolerances, over_bearings, kept_rigid)
+        found = _link(tip, tips[j], bearings, tolerances, rules)
         if found is not None and (tip.key not in best or found[0] < best[tip.key][0]):
             best[tip.key] = found
     links = []
@@ -102,8 +112,7 @@ def _link(
     other: _Tip,
     bearings: Mapping[str, list[Bearing]],
     tolerances: Tolerances,
-    over_bearings: bool,
-    kept_rigid: frozenset[End],
+    rules: _Rules,
 ) -> tuple[float, Link] | None:
     if other.beam.id == tip.beam.id:
         return None
@@ -118,7 +127,8 @@ def _link(
     shared = _shared(bearings[tip.beam.id], tip.end, bearings[other.beam.id], other.end)
     off = length(subtract(apart, scale(tip.outward, gap)))
     score = abs(gap) + 10.0 * off
-    rigid = tip.key in kept_rigid or other.key in kept_rigid
+    ends = {tip.key, other.key}
+    rigid = bool(ends & rules.kept_rigid)
     if shared is None:
         if abs(gap) > tolerances.join:
             return None
@@ -129,7 +139,7 @@ def _link(
         if abs(gap) > shared.width + tolerances.join:
             return None
         return score, Link(tip.key, other.key, "splice", "", gap)
-    if not rigid and not over_bearings:
+    if not rigid and (not rules.over_bearings or ends & rules.loose):
         return None
     return score, Link(tip.key, other.key, "bearing", shared.id, gap)
 

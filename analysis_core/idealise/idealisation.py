@@ -7,10 +7,12 @@ from analysis_core.idealise import analytical, meetings
 from analysis_core.idealise.actions import put_axis_actions, put_node_actions
 from analysis_core.idealise.analytical import analytical_scheme
 from analysis_core.idealise.area_loads import put_area_loads
+from analysis_core.idealise.bearing_supports import support_chains
 from analysis_core.idealise.build import build
 from analysis_core.idealise.cases import canonical, cases_of, combinations_of, with_used
 from analysis_core.idealise.clear_spans import measure_clear
 from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.free_ends import explain_free_ends
 from analysis_core.idealise.job_actions import put_job_actions
 from analysis_core.idealise.job_conditions import (
     put_job_movements,
@@ -19,12 +21,13 @@ from analysis_core.idealise.job_conditions import (
 )
 from analysis_core.idealise.leaning import fault_leaning
 from analysis_core.idealise.log import Log
-from analysis_core.idealise.physical import physical_scheme, put_legs, support_chains
+from analysis_core.idealise.physical import physical_scheme, put_legs
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.properties import PropertyTable
 from analysis_core.idealise.scheme import Rest, Scheme, fault_fallen
 from analysis_core.idealise.selectors import Chooser
 from analysis_core.idealise.self_weight import put_self_weight, weight_cases
+from analysis_core.idealise.standing_columns import let_columns_stand
 from analysis_core.idealise.temperature import put_temperature_actions
 from analysis_core.model import Action, Line, LineModel, Transfer
 from analysis_core.settings import Settings
@@ -48,6 +51,8 @@ def idealise(building: Building, settings: Settings) -> LineModel:
         put_job_supports(scheme.drafts, settings, chooser, log)
         support_chains(physical, settings, log)
         meetings.let_carry(physical, table, settings.tolerances, log)
+        explain_free_ends(physical, log)
+        let_columns_stand(physical, settings.tolerances, log)
         if settings.analysis.spans == "face":
             measure_clear(scheme.drafts, log)
         if settings.analysis.columns_as_legs:

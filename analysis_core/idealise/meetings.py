@@ -5,6 +5,7 @@ Two straight lines cross once in plan, so a pair of lines has one contact at mos
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 
@@ -16,7 +17,7 @@ from analysis_core.idealise.joints import joint_at, member_at
 from analysis_core.idealise.log import Log
 from analysis_core.idealise.physical import PhysicalScheme
 from analysis_core.idealise.properties import PropertyTable
-from analysis_core.idealise.scheme import Rest, Scheme, body_of
+from analysis_core.idealise.scheme import Rest, Scheme, body_of, stiffness_at
 from analysis_core.idealise.spans import Chain, Seating, outer_end, seat_key
 from analysis_core.model import FREE, RIGID
 from analysis_core.settings import Tolerances
@@ -52,9 +53,9 @@ def let_carry(
     sides: dict[str, dict[str, _Side]] = {}
     for pair in pairs.values():
         if _matters(pair, found, tolerances):
-            _enter(pair, scheme.drafts, table, contacts, sides, settled=False)
+            _enter(pair, scheme.drafts, found, table, contacts, sides, settled=False)
     for pair in _on_top(found, home):
-        _enter(pair, scheme.drafts, table, contacts, sides, settled=True)
+        _enter(pair, scheme.drafts, found, table, contacts, sides, settled=True)
     decide([body_of(draft) for draft in scheme.drafts], contacts)
     scheme.contacts = contacts
     for contact in contacts:
@@ -142,6 +143,7 @@ def _on_top(found: list[Chain], home: Mapping[str, int]) -> Iterator[tuple[_Side
 def _enter(
     pair: tuple[_Side, _Side],
     drafts: list[Draft],
+    found: list[Chain],
     table: PropertyTable,
     contacts: list[Contact],
     sides: dict[str, dict[str, _Side]],
@@ -150,22 +152,17 @@ def _enter(
 ) -> None:
     marks = [drafts[side.line].mark for side in pair]
     key = " ".join(sorted(marks)) + f" {pair[0].run:.3f}"
-    touches = tuple(
-        Touch(mark, side.run, side.ends == 0, _stiffness(drafts[side.line], table))
-        for mark, side in zip(marks, pair, strict=True)
-    )
+    touches = []
+    for mark, side in zip(marks, pair, strict=True):
+        draft, chain = drafts[side.line], found[side.line]
+        distance = side.run - chain.first
+        element, _ = member_at(draft, distance)
+        x = distance * math.hypot(chain.direction[0], chain.direction[1])
+        stiffness = stiffness_at(draft, x, element, table)
+        touches.append(Touch(mark, side.run, side.ends == 0, stiffness))
     carrier = marks[1] if settled else None
-    contacts.append(Contact(key, touches, carrier, settled))
+    contacts.append(Contact(key, tuple(touches), carrier, settled))
     sides[key] = dict(zip(marks, pair, strict=True))
-
-
-def _stiffness(draft: Draft, table: PropertyTable) -> float:
-    properties = table.of(draft.bars[0].member)
-    if properties.section is None or properties.material is None:
-        return 0.0
-    rigidity = properties.section.inertia * properties.material.elastic_modulus
-    longest = max(draft.length(bar) for bar in draft.bars)
-    return rigidity / longest**3
 
 
 def _rest(

@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 
 from analysis_core.idealise.carrying import Body, Contact, standing
 from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.properties import PropertyTable
 from analysis_core.model import FREE
 
 
@@ -37,6 +38,26 @@ def body_of(draft: Draft) -> Body:
     """Return what ``carrying`` needs to know of a draft."""
     grounds = [(joint.x, joint.rotation > FREE) for joint in draft.joints if joint.vertical > FREE]
     return Body(draft.mark, grounds)
+
+
+def stiffness_at(draft: Draft, x: float, element: str, table: PropertyTable) -> float:
+    """Return roughly how stiff a draft is against a force at ``x``, N/m.
+
+    As a simple beam of the member ``element`` between the supports on both sides, a and b away:
+    3 EI L / (a² b²); beyond its supports as a cantilever: 3 EI / a³.
+    """
+    member = next(bar.member for bar in draft.bars if bar.member.global_id == element)
+    properties = table.of(member)
+    if properties.section is None or properties.material is None:
+        return 0.0
+    rigidity = 3.0 * properties.section.inertia * properties.material.elastic_modulus
+    held = [j.x for j in draft.joints if j.vertical > FREE and abs(j.x - x) > 1e-3]
+    a = min((x - other for other in held if other < x), default=0.0)
+    b = min((other - x for other in held if other > x), default=0.0)
+    if a > 0.0 and b > 0.0:
+        return rigidity * (a + b) / (a * a * b * b)
+    ends = [j.x for j in draft.joints]
+    return rigidity / max(a, b, (max(ends) - min(ends)) / 2.0, 1e-3) ** 3
 
 
 def fault_fallen(drafts: Iterable[Draft]) -> None:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import itertools
 import math
+from dataclasses import replace
 
 import pytest
 from building_makers import finding, only, shuffled, slugs, spans, turned
@@ -301,3 +302,62 @@ def test_what_acts_over_a_bearing_goes_to_it():
         (1, 0.0, pytest.approx(300.0))
     ]
     assert sum((a.end - a.start) * a.transverse[0] for a in spread) == pytest.approx(1700.0)
+
+
+def test_a_column_on_a_beam_hands_the_upper_line_down():
+    """The upper beam rests on a column at x = 4 that stands on the lower beam."""
+    carriers = [
+        column("A", 0.0, 0.0, 0.0, Z - 0.2),
+        column("B", 7.0, 0.0, 0.0, Z - 0.2),
+        column("planted", 4.0, 0.0, Z + 0.2, 6.0),
+        column("tall", 7.0, 0.0, Z + 0.2, 6.0),
+    ]
+    beams = [
+        beam("low", (0.0, 0.0, Z), (7.0, 0.0, Z)),
+        beam("up", (4.0, 0.0, 6.2), (7.0, 0.0, 6.2)),
+    ]
+    found = idealise(house(beams, carriers), Settings())
+    lines = {line.elements[0]: line for line in found.lines}
+    (transfer,) = found.transfers
+
+    assert (transfer.from_line, transfer.to_line) == (lines["up"].mark, lines["low"].mark)
+    assert (transfer.joint, transfer.member, transfer.position) == (0, 0, pytest.approx(4.0))
+    assert "stands on beam low" in lines["up"].joints[0].reason
+    assert finding(found, "column-on-beam").elements == ("planted", "low")
+
+
+def test_a_long_overhang_names_what_is_nearest():
+    carriers = [column(f"C{i}", x, 0.0, 0.0, Z - 0.2) for i, x in enumerate((0.0, 4.0))]
+    carriers.append(column("near", 7.6, 0.0, 0.0, Z - 0.2))
+    found = idealise(house([beam("B", (0.0, 0.0, Z), (7.0, 0.0, Z))], carriers), Settings())
+    told = finding(found, "long-overhang")
+
+    assert "overhangs its last bearing by 3.00 m, next to a span of 4.00 m" in told.message
+    assert "column 'near' (GlobalId near), 450 mm away in plan" in told.message
+    assert only(found).joints[-1].reason == "free end: overhangs its last bearing by 3.00 m"
+
+
+def test_an_end_that_the_model_states_as_released_ends_the_line():
+    building = row()
+    loose = replace(building.members[1], end_stiffness=(0.0, None))
+    members = (building.members[0], loose, *building.members[2:])
+    found = idealise(replace(building, members=members), Settings())
+
+    assert sorted(line.elements for line in found.lines) == [("B0",), ("B1", "B2")]
+
+
+def test_secondaries_stated_as_rigid_run_on_through_the_primary():
+    columns = [column("C0", 0.0, 0.0, 0.0, Z - 0.2), column("C1", 7.0, 0.0, 0.0, Z - 0.2)]
+    columns += [column("D0", 2.5, 4.0, 0.0, Z - 0.2), column("D1", 2.5, -5.0, 0.0, Z - 0.2)]
+    beams = [
+        beam("P", (0.0, 0.0, Z), (7.0, 0.0, Z)),
+        beam("S1", (2.5, 0.1, Z), (2.5, 4.0, Z), end_stiffness=(math.inf, None)),
+        beam("S2", (2.5, -5.0, Z), (2.5, -0.1, Z), end_stiffness=(None, math.inf)),
+    ]
+    found = idealise(house(beams, columns), Settings())
+    line = next(line for line in found.lines if "S1" in line.elements)
+
+    assert line.elements == ("S2", "S1")
+    assert spans(line) == [5.0, 4.0]
+    assert line.joints[1].element == "P"
+    assert [t.to_line for t in found.transfers] != []

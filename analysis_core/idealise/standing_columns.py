@@ -1,0 +1,125 @@
+"""Columns that stand on beams: what they carry goes down to the line below."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from analysis_core.building import Carrier
+from analysis_core.idealise.beams import Beam
+from analysis_core.idealise.bearings import boxes_of_carriers, kind_of
+from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.log import Log, named
+from analysis_core.idealise.pairs import Floats, overlapping
+from analysis_core.idealise.physical import PhysicalScheme
+from analysis_core.idealise.plan import centre, gap_to
+from analysis_core.idealise.scheme import Rest
+from analysis_core.model import RIGID
+from analysis_core.settings import Tolerances
+
+# Between a column and the one below it there may be a beam and a slab of this height (m).
+_BETWEEN = 1.5
+
+
+def let_columns_stand(physical: PhysicalScheme, tolerances: Tolerances, log: Log) -> None:
+    """Hand the reactions that reach a column which stands on a beam to that beam's line.
+
+    A column is followed down, storey by storey, through the columns, walls and footings below
+    it.  Only where the lowest of them has none of these below, and a beam right under it, does
+    the load go to the beam.
+    """
+    drafts = physical.scheme.drafts
+    columns = {c.global_id: c for c in physical.carriers if kind_of(c) == "column"}
+    used = {j.element for d in drafts for j in d.joints if j.vertical == RIGID} & set(columns)
+    if not used:
+        return
+    below = _below(physical, list(columns.values()))
+    beams = {beam.id: beam for chain in physical.chains for beam in chain.beams}
+    feet = _feet(columns, below, beams, tolerances)
+    home = {beam.id: i for i, chain in enumerate(physical.chains) for beam in chain.beams}
+    for index, draft in enumerate(drafts):
+        for joint in draft.joints:
+            if joint.element not in columns or joint.vertical != RIGID or joint.settled:
+                continue
+            column, seen = columns[joint.element], {joint.element}
+            while (lower := below.get(column.global_id)) in columns and lower not in seen:
+                seen.add(str(lower))
+                column = columns[str(lower)]
+            found = feet.get(column.global_id)
+            if found is None or home[found[0]] == index:
+                continue
+            beam, station = found
+            carrier = drafts[home[beam]]
+            physical.scheme.rests.append(
+                Rest(draft, joint.key, carrier, member=beam, station=station)
+            )
+            joint.reason += f"; the column stands on beam {beam} of line {carrier.mark}"
+            _report(draft, carrier, column, beam, log)
+
+
+def _report(draft: Draft, carrier: Draft, column: Carrier, beam: str, log: Log) -> None:
+    log.add(
+        "note",
+        "column-on-beam",
+        f"Column {named(column)} stands on beam {beam} of line {carrier.mark}; what line "
+        f"{draft.mark} hands to it acts there. Its own weight is not included.",
+        (column.global_id, beam),
+        carrier.mark,
+    )
+
+
+def _below(physical: PhysicalScheme, columns: list[Carrier]) -> dict[str, str]:
+    """Return what stands directly under each column, by GlobalId."""
+    holders = [c for c in physical.carriers if kind_of(c) in ("column", "wall", "footing")]
+    i, j = overlapping(_feet_boxes(columns, _BETWEEN), boxes_of_carriers(holders))
+    result: dict[str, tuple[float, str]] = {}
+    for a, b in zip(i.tolist(), j.tolist(), strict=True):
+        column, holder = columns[a], holders[b]
+        drop = column.bottom - holder.top
+        if holder is column or holder.bottom >= column.bottom - 0.05 or drop > _BETWEEN:
+            continue
+        if gap_to(holder.corners, centre(column.corners)) > 0.05:
+            continue
+        found = result.get(column.global_id)
+        if found is None or (abs(drop), holder.global_id) < found:
+            result[column.global_id] = (abs(drop), holder.global_id)
+    return {key: holder for key, (_, holder) in result.items()}
+
+
+def _feet(
+    columns: dict[str, Carrier],
+    below: dict[str, str],
+    beams: dict[str, Beam],
+    tolerances: Tolerances,
+) -> dict[str, tuple[str, float]]:
+    """Return the beam under each column that has nothing firmer below, and the station there."""
+    loose = [c for key, c in columns.items() if key not in below]
+    known = list(beams.values())
+    if not loose or not known:
+        return {}
+    ends = np.array([(b.member.start, b.member.end) for b in known]).reshape(-1, 2, 3)
+    around = np.array([b.half_width + max(b.above, b.below) + tolerances.join for b in known])
+    boxes = np.hstack([ends.min(axis=1) - around[:, None], ends.max(axis=1) + around[:, None]])
+    i, j = overlapping(_feet_boxes(loose, tolerances.bearing), boxes)
+    result: dict[str, tuple[float, str, float]] = {}
+    for a, b in zip(i.tolist(), j.tolist(), strict=True):
+        column, beam = loose[a], known[b]
+        place, side = beam.ray.local(centre(column.corners))
+        if abs(side) > beam.half_width + tolerances.join:
+            continue
+        if not -tolerances.join <= place <= beam.run + tolerances.join:
+            continue
+        place = min(max(place, 0.0), beam.run)
+        lift = abs(column.bottom - beam.top(place))
+        if lift > tolerances.bearing:
+            continue
+        candidate = (lift, beam.id, beam.station(place))
+        if column.global_id not in result or candidate < result[column.global_id]:
+            result[column.global_id] = candidate
+    return {key: (beam, station) for key, (_, beam, station) in result.items()}
+
+
+def _feet_boxes(columns: list[Carrier], depth: float) -> Floats:
+    boxes = boxes_of_carriers(columns)
+    boxes[:, 5] = boxes[:, 2] + depth
+    boxes[:, 2] -= depth
+    return boxes
