@@ -192,7 +192,17 @@ def _redistribution(data: Mapping[str, Any], where: str) -> Redistribution:
         largest=data.get("largest", False),
         per_joint=joints,
         on=_selector(data.get("on", {})),
+        neutral_axis_ratio=data.get("neutral_axis_ratio"),
+        ductility=data.get("ductility", ""),
+        net_tensile_strain=data.get("net_tensile_strain"),
+        section_class=_section_class(data.get("section_class"), where),
     )
+
+
+def _section_class(value: float | None, where: str) -> int | None:
+    if value is not None and value not in (1, 2, 3, 4):
+        raise JobError(f"'{where}.section_class' is {value:g}; it must be 1, 2, 3 or 4.")
+    return None if value is None else int(value)
 
 
 def _selector(data: Mapping[str, Any]) -> Selector:

@@ -210,6 +210,12 @@ class Limits:
     cantilever_ratio: float = 125.0
     absolute: float = 0.0
     on: Selector = field(default_factory=Selector)
+    kind: str = ""
+    """Which serviceability combinations: "characteristic", "frequent", …; "": all of them."""
+    camber: float = 0.0
+    """Built in upwards at the middle of a span, or at the tip of a cantilever, m."""
+    variable_only: bool = False
+    """Whether only what variable actions add is compared (brittle finishes)."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -223,6 +229,13 @@ class Redistribution:
     largest: bool = False
     per_joint: Mapping[int, float] = field(default_factory=dict)
     on: Selector = field(default_factory=Selector)
+    neutral_axis_ratio: float | None = None
+    """Concrete: depth of the neutral axis over effective depth after redistribution."""
+    ductility: str = ""
+    """Class of reinforcement: A, B or C."""
+    net_tensile_strain: float | None = None
+    section_class: int | None = None
+    """Steel: class of the section, 1 to 4."""
 
 
 @dataclass(frozen=True, slots=True)

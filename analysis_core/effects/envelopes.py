@@ -67,9 +67,9 @@ def envelopes(
         raise ValueError(f"no combination is of the limit state '{limit_state}'")
     arrangements = arrangements or Arrangements()
     out: list[LineEnvelope | None] = [None] * len(lines)
-    for table, members in _alike(lines, chosen, arrangements):
+    for table, members in tables(lines, chosen, arrangements):
         batch = [lines[i] for i in members]
-        ordered = [_ordered(solutions[i], lines[i].cases) for i in members]
+        ordered = [in_order(solutions[i], lines[i].cases) for i in members]
         by_member = _member_envelopes(batch, ordered, table, count)
         by_joint = _reactions(batch, ordered, table)
         for i, found, reactions in zip(members, by_member, by_joint, strict=True):
@@ -82,23 +82,24 @@ def span_numbers(line: Line) -> tuple[int, ...]:
     return tuple(sorted({m.span for m in line.members if m.span is not None}))
 
 
-def _alike(
+def tables(
     lines: Sequence[SpanCases], combinations: Sequence[Combination], arrangements: Arrangements
 ) -> list[tuple[FactorTable, list[int]]]:
-    """Lines whose parts take the same factors, so that one table serves them all."""
-    tables: dict[object, tuple[FactorTable, list[int]]] = {}
+    """Return each table of factors with the numbers of the lines that it serves."""
+    out: dict[object, tuple[FactorTable, list[int]]] = {}
     for i, line in enumerate(lines):
         numbers = span_numbers(line.line) if arrangements.listed else ()
         spans = [p.span for p in line.parts] if arrangements.listed else ()
         key = (numbers, tuple(spans), tuple((p.case, bool(p.place)) for p in line.parts))
-        if key not in tables:
+        if key not in out:
             table = factor_table(combinations, line.parts, arrangements, numbers)
-            tables[key] = table, []
-        tables[key][1].append(i)
-    return list(tables.values())
+            out[key] = table, []
+        out[key][1].append(i)
+    return list(out.values())
 
 
-def _ordered(solution: LineSolution, cases: Sequence[str]) -> LineSolution:
+def in_order(solution: LineSolution, cases: Sequence[str]) -> LineSolution:
+    """Return the solution with exactly these cases.  Raises ValueError where it lacks one."""
     if tuple(solution.cases) == tuple(cases):
         return solution
     missing = [case for case in cases if case not in solution.cases]
@@ -154,8 +155,8 @@ def _named(swept: Swept, table: FactorTable, parts: Sequence[tuple[Part, ...]]) 
     return _Named(
         top=_settled(swept.top),
         bottom=_settled(swept.bottom),
-        highest=_extremes(swept.highest, table, parts, largest=True),
-        lowest=_extremes(swept.lowest, table, parts, largest=False),
+        highest=named_extremes(swept.highest, table, parts, largest=True),
+        lowest=named_extremes(swept.lowest, table, parts, largest=False),
     )
 
 
@@ -190,9 +191,10 @@ def _member(
     )
 
 
-def _extremes(
+def named_extremes(
     peaks: Peaks, table: FactorTable, parts: Sequence[tuple[Part, ...]], *, largest: bool
 ) -> list[Extreme]:
+    """Return the extremes of B members; ``parts`` are those of the line that each belongs to."""
     sources = table.sources(peaks.row, peaks.contributions, parts, largest=largest)
     return list(map(Extreme, peaks.value.tolist(), peaks.x.tolist(), sources))
 
@@ -212,7 +214,7 @@ def _reactions(
         row = pick(rows, axis=0)
         found = np.take_along_axis(rows, row[None], 0)[0]
         peaks = Peaks(found, x, row, flat)
-        extremes.append(_extremes(peaks, table, parts, largest=pick is np.argmax))
+        extremes.append(named_extremes(peaks, table, parts, largest=pick is np.argmax))
     top, bottom = extremes
     made = iter(
         ReactionEnvelope(

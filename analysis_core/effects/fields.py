@@ -109,7 +109,7 @@ def _groups(rows: Sequence[segments.Row], count: int) -> Iterator[list[int]]:
 
 def _integrate(block: segments.Block, ends: Floats, moved: Floats) -> Fields:
     """``ends`` (C, 2, B): end moments; ``moved`` (C, 2, B): deflection of the ends."""
-    moment, shear = _equilibrium(block, ends)
+    moment, shear = equilibrium(block, ends)
     return Fields(
         line=np.array([row.line for row in block.rows]),
         member=np.array([row.member.id for row in block.rows]),
@@ -120,7 +120,8 @@ def _integrate(block: segments.Block, ends: Floats, moved: Floats) -> Fields:
     )
 
 
-def _equilibrium(block: segments.Block, ends: Floats) -> tuple[Floats, Floats]:
+def equilibrium(block: segments.Block, ends: Floats) -> tuple[Floats, Floats]:
+    """Return moment and shear from the moments on the members' ends (C, 2, B) and the actions."""
     load, (degree, count, *_) = block.load, block.load.shape
     width = np.diff(block.cuts, axis=0)
     moment = np.zeros((degree + 2, *load.shape[1:]))
