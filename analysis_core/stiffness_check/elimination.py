@@ -21,10 +21,12 @@ from analysis_core.stiffness_check.equations import Equations
 Floats = NDArray[np.float64]
 Index = NDArray[np.intp]
 
-_GIVING_WAY = 1e-10
+_GIVING_WAY = 1e-8
 """How much an axial row gives way in the factored matrix, all entries being about 1."""
 _DENSE = 300
 """Largest number of unknowns that is always solved as a full matrix."""
+_SETTLED = 1e-10
+"""Changes below this part of the solution that no longer shrink are rounding."""
 _PASSES = 4
 _STEPS = 60
 
@@ -129,7 +131,9 @@ def _refined_alone(
         relative = float((np.abs(change).max(0) / np.where(largest, largest, 1.0)).max())
         if not np.isfinite(relative):
             raise SingularError("overflow")
-        if relative <= 1e-17 or (relative <= 1e-14 and relative > last / 2.0):
+        # Members in a row are redundant but for the rounding of their directions, which leaves
+        # changes of about 1e-20 / _GIVING_WAY along the redundant force for ever.
+        if relative <= 1e-17 or (relative <= _SETTLED and relative > 0.9 * last):
             return found, True
         last = relative
     return found, False
