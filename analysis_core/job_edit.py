@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
+from functools import lru_cache
 from typing import Any
 
 import yaml
@@ -20,8 +21,7 @@ Data = dict[str, Any]
 
 def entries(text: str, section: str) -> list[Any]:
     """Return the entries of a list in the job file as plain data; [] where it has none."""
-    data = read_yaml(text) or {}
-    found = data.get(section) if isinstance(data, dict) else None
+    found = _data(text).get(section)
     return list(found) if isinstance(found, list) else []
 
 
@@ -121,7 +121,8 @@ def _flow(value: object) -> str:
 
 
 def _data(text: str) -> Data:
-    data = read_yaml(text)
+    """Return the sections; a mapping of the caller's own, whose values are not to be changed."""
+    data = _plain(text)
     if data is None:
         return {}
     if not isinstance(data, dict):
@@ -129,8 +130,13 @@ def _data(text: str) -> Data:
     return dict(data)
 
 
+@lru_cache(maxsize=4)  # a decision asks several times about the same two texts
+def _plain(text: str) -> Any:
+    return read_yaml(text)
+
+
 def _checked(text: str, wanted: Data) -> str:
-    if (read_yaml(text) or {}) != wanted:
+    if _data(text) != wanted:
         raise JobError(
             "The job file is written in a way that cannot be changed here; change it in a text "
             "editor."

@@ -7,6 +7,7 @@ import json
 import math
 from collections.abc import Iterable, Mapping
 from dataclasses import replace as changed
+from functools import lru_cache
 from importlib import resources
 from pathlib import Path
 from typing import Any
@@ -59,10 +60,15 @@ def load(
             f"{', '.join(names())}; one of your own is named by the path of a .yaml file."
         )
     try:
-        rules = _rule_set(check(_complete(read_yaml(text), 0), schema()))
+        rules = _parsed(text)
     except JobError as error:
         raise JobError(f"{where}: {error}") from None
     return _replaced(rules, replace or {})
+
+
+@lru_cache(maxsize=16)  # by the text itself, so that a file that was edited is read anew
+def _parsed(text: str) -> RuleSet:
+    return _rule_set(check(_complete(read_yaml(text), 0), schema()))
 
 
 def schema() -> dict[str, Any]:

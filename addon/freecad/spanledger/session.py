@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from functools import lru_cache
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -68,7 +69,7 @@ class Session:
     @property
     def settings(self) -> Settings:
         """What the job file says now; a rule set of the user's own is sought beside it."""
-        settings = job.parse(self.text)
+        settings = _parsed(self.text)
         rules = settings.rules
         if rules.name.endswith((".yaml", ".yml")) and not Path(rules.name).is_absolute():
             beside = str(self.job_path.resolve().parent / rules.name)
@@ -86,7 +87,7 @@ class Session:
 
         Raises JobError where it is not understood or cannot be written; then nothing changed.
         """
-        job.parse(text)
+        _parsed(text)
         if text == self.text:
             return
         self._write(text)
@@ -181,6 +182,11 @@ class Session:
 def job_beside(path: Path) -> Path:
     """Return where the job file of a model stands: the same name, ending in .yaml."""
     return path.with_suffix(".yaml")
+
+
+@lru_cache(maxsize=8)
+def _parsed(text: str) -> Settings:
+    return job.parse(text)
 
 
 def _stamp(path: Path) -> tuple[int, int] | None:

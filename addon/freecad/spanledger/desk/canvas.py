@@ -41,16 +41,19 @@ class Canvas(QtWidgets.QWidget):
         self.chosen: tuple[str, int] | None = None
         self.cursor: float | None = None
 
-    def show_strip(self, strip: Strip | None, units: DisplayUnits) -> None:
-        """Show a line; None shows nothing."""
-        self.strip, self.units = strip, units
+    def show_strip(
+        self, strip: Strip | None, units: DisplayUnits, chosen: tuple[str, int] | None = None
+    ) -> None:
+        """Show a line, and the spot that is worked on; None shows nothing."""
+        self.strip, self.units, self.chosen = strip, units, chosen
         self._take_room()
         self._lay_out()
 
     def choose(self, chosen: tuple[str, int] | None) -> None:
         """Mark the spot that is worked on."""
-        self.chosen = chosen
-        self._lay_out()
+        if chosen != self.chosen:
+            self.chosen = chosen
+            self._lay_out()
 
     def show_quantities(self, quantities: tuple[str, ...]) -> None:
         """Show only these curves."""

@@ -62,8 +62,9 @@ class FindingsList(QtWidgets.QWidget):
 
     def show_rows(self, rows: list[FindingRow]) -> None:
         """Show these findings."""
-        self._rows = rows
-        self._fill()
+        if rows != self._rows:
+            self._rows = rows
+            self._fill()
 
     def _fill(self) -> None:
         shown = matching(self._rows, self.words.text())

@@ -70,6 +70,8 @@ class LineDesk(QtWidgets.QWidget):
     def show_views(self, views: list[View]) -> None:
         """Offer these views; the one that was chosen stays if it is among them."""
         kept = self.current_view()
+        if views == self._views:
+            return
         self._views = views
         blocker = QtCore.QSignalBlocker(self.view)
         self.view.clear()
@@ -85,10 +87,12 @@ class LineDesk(QtWidgets.QWidget):
         index = self.view.currentIndex()
         return self._views[index] if 0 <= index < len(self._views) else None
 
-    def show_strip(self, strip: Strip | None, units: DisplayUnits) -> None:
-        """Show a line."""
+    def show_strip(
+        self, strip: Strip | None, units: DisplayUnits, chosen: tuple[str, int] | None = None
+    ) -> None:
+        """Show a line, and the spot that is worked on."""
         self.title.setText(strip.title if strip else "")
-        self.canvas.show_strip(strip, units)
+        self.canvas.show_strip(strip, units, chosen)
 
     def _view_changed(self, _index: int) -> None:
         view = self.current_view()

@@ -154,10 +154,14 @@ class LineList(QtWidgets.QWidget):
         self.model.modelReset.connect(self._after_reset)
         self._quiet = False
         self._line: int | None = None
+        self._shown: list[Row] = []
+        self._units: DisplayUnits | None = None
 
     def show_rows(self, rows: list[Row], units: DisplayUnits) -> None:
         """Show these lines."""
-        self._total = len(rows)
+        if rows == self._shown and units == self._units:
+            return
+        self._shown, self._units = rows, units
         self.model.set_rows(rows, units)
         for column in range(len(COLUMNS)):
             self.tree.resizeColumnToContents(column)
@@ -184,6 +188,6 @@ class LineList(QtWidgets.QWidget):
     def _after_reset(self) -> None:
         self.tree.expandAll()
         text = translate("Spanledger", "{shown} of {total} lines")
-        self.count.setText(text.format(shown=self.model.shown(), total=getattr(self, "_total", 0)))
+        self.count.setText(text.format(shown=self.model.shown(), total=len(self._shown)))
         if self._line is not None:
             self.choose(self._line)

@@ -84,7 +84,7 @@ class Panels:
             return
         result = session.outcome.lines[line]
         strip = strip_of(result, view, session.units, before=_before(session, result.line.mark))
-        self.strip.show_strip(strip, session.units)
+        self.strip.show_strip(strip, session.units, spot)
         self.show_spot(session, line, spot)
 
     def show_spot(self, session: Session, line: int, spot: Spot | None) -> None:

@@ -21,6 +21,7 @@ class Picture:
     def __init__(self) -> None:
         self.building_shown = True
         self._scenes: dict[str, Scene] = {}
+        self._shapes: dict[str, Any] = {}  # a building as large as a town is not sent twice
 
     def show(self, name: str, session: Session, states: list[str]) -> None:
         """Draw the lines of a model into its document, in one step where it is the first."""
@@ -29,6 +30,7 @@ class Picture:
         if obj is not None:
             self._scenes[name] = document.show_outcome(obj, session.outcome, states)
             return
+        self._shapes.pop(name, None)
         doc.openTransaction(translate("Spanledger", "Beam lines"))
         try:
             obj = _add_object(doc, session)
@@ -57,12 +59,15 @@ class Picture:
     def show_building(self, name: str, session: Session) -> None:
         """Draw the building faintly, or not where it is switched off."""
         obj = document.find_beam_lines(FreeCAD.getDocument(name))
-        if obj is not None:
-            obj.ViewObject.Proxy.show_building(session.shape if self.building_shown else None)
+        shape = session.shape if self.building_shown else None
+        if obj is not None and self._shapes.get(name) is not shape:
+            self._shapes[name] = shape
+            obj.ViewObject.Proxy.show_building(shape)
 
     def forget(self, name: str) -> None:
         """A document was closed."""
         self._scenes.pop(name, None)
+        self._shapes.pop(name, None)
 
 
 def _add_object(doc: Any, session: Session) -> Any:
