@@ -191,7 +191,7 @@ def _balance(options: argparse.Namespace) -> int:
     units = display_units(settings.display.system, settings.display.units)
     text = balance_text(outcome, units)
     if options.record:
-        from analysis_core.record_tables import record_text
+        from analysis_core.record_text import record_text
 
         text = record_text(pipeline.records(outcome), units) + "\n\n" + text
     _put(options, lambda: pipeline.document(outcome, stations=options.stations), text)

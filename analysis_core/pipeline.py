@@ -7,7 +7,7 @@ it and nothing else.
 from __future__ import annotations
 
 import difflib
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass, replace
 from datetime import datetime
 from pathlib import Path
@@ -16,7 +16,8 @@ from typing import Any
 from analysis_core import idealise
 from analysis_core.building import Building
 from analysis_core.combining import choose, with_combinations
-from analysis_core.errors import JobError
+from analysis_core.distribution.record import DistributionRecord, distribute
+from analysis_core.errors import AnalysisError, JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
 from analysis_core.ifc import writer
@@ -187,6 +188,23 @@ def document(outcome: Outcome, *, stations: int = 21) -> dict[str, Any]:
     return results_document(outcome, stations=stations)
 
 
+def records(outcome: Outcome, cases: Sequence[str] = ()) -> Iterator[DistributionRecord]:
+    """Yield the recorded distribution of each line and case (all where ``cases`` is empty).
+
+    Cases without actions on a line, and those whose cycles do not settle, are left out.
+    """
+    for result in outcome.lines:
+        if result.status != "balanced":
+            continue
+        acting = {action.case for action in result.line.actions}
+        for case in cases or [case.name for case in outcome.model.cases]:
+            if case in acting:
+                try:
+                    yield distribute(result.line, case)
+                except AnalysisError:
+                    continue
+
+
 def of_storeys(outcome: Outcome, storeys: Sequence[str]) -> Outcome:
     """Return the lines of the named storeys alone.  Raises JobError for a name without lines."""
     known = [r.line.storey for r in outcome.lines if r.line.storey]
@@ -201,11 +219,17 @@ def of_storeys(outcome: Outcome, storeys: Sequence[str]) -> Outcome:
 
 def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
+    from analysis_core.calculation import distribution_parts
     from analysis_core.sheet.document import sheet as write_sheet
+    from analysis_core.sheet.html import Markup
 
     units = display_units(settings.display.system, settings.display.units)
     today = date or datetime.now().date().isoformat()
-    return write_sheet(outcome, units, title=settings.title, date=today)
+
+    def extra(result: LineResult) -> list[Markup]:
+        return distribution_parts(result, units)
+
+    return write_sheet(outcome, units, title=settings.title, date=today, extra=extra)
 
 
 def survey_document(found: Survey) -> dict[str, Any]:

@@ -9,6 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
+from functools import partial
 
 import numpy as np
 
@@ -23,6 +24,7 @@ from analysis_core.effects.arrangements import (
 )
 from analysis_core.effects.combinations import combine
 from analysis_core.effects.envelopes import envelopes
+from analysis_core.effects.states import State, governing_states
 from analysis_core.errors import AnalysisError, MechanismError
 from analysis_core.findings import Finding
 from analysis_core.fingerprints import basis, fingerprint
@@ -320,6 +322,8 @@ def _results(
             status="balanced",
             solution=s.whole,
             combined=combine(s.whole, rules.combinations),
+            parts=s.parts,
+            states=partial(_states, s, rules, found.envelopes),
             envelopes=found.envelopes,
             verification=Verification(
                 s.whole.joint_residual, s.whole.continuity_residual, found.difference
@@ -327,6 +331,16 @@ def _results(
         )
     _add_fingerprints(model, rules, settings, solver, results)
     return tuple(results.get(line.mark) or LineResult(line, "not analysed") for line in model.lines)
+
+
+def _states(
+    solved: _Solved, rules: Rules, by_state: Mapping[str, LineEnvelope]
+) -> tuple[State, ...]:
+    envelope = by_state.get("strength")
+    if envelope is None:
+        return ()
+    strength = [c for c in rules.combinations if c.limit_state == "strength"]
+    return governing_states(solved.spans, solved.parts, strength, rules.arrangements, envelope)
 
 
 def _finished(

@@ -6,8 +6,9 @@ that occur together.  A state is one: a factor for each part of the cases.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Hashable, Sequence
 from dataclasses import dataclass, replace
+from itertools import zip_longest
 
 import numpy as np
 from numpy.typing import NDArray
@@ -17,7 +18,7 @@ from analysis_core.effects.combinations import factored
 from analysis_core.effects.envelopes import span_numbers
 from analysis_core.effects.factors import FactorTable, factor_table
 from analysis_core.effects.stations import stations
-from analysis_core.model import Combination, Line
+from analysis_core.model import Action, Combination, DistributedForce, Line, PointForce
 from analysis_core.results import Extreme, LineEnvelope, LineSolution, Stations
 
 Floats = NDArray[np.float64]
@@ -72,14 +73,26 @@ def governing_states(
 
 
 def state_line(line: Line, state: State, *, case: str) -> Line:
-    """Return the line of the parts under the factored actions of a state, as one case."""
+    """Return the line of the parts under the factored actions of a state, as one case.
+
+    Forces that stand on the same stretch or at the same place are added up.
+    """
     factors = dict(state.factors)
-    actions = tuple(
+    acting = [
         factored(action, factors[action.case], case=case)
         for action in line.actions
         if factors.get(action.case)
-    )
-    return replace(line, actions=actions)
+    ]
+    summed: dict[Hashable, Action] = {}
+    for action in acting:
+        key: Hashable = action
+        if isinstance(action, DistributedForce):
+            key = action.member, action.start, action.end
+        elif isinstance(action, PointForce):
+            key = action.member, action.position
+        known = summed.get(key)
+        summed[key] = action if known is None else _sum(known, action)
+    return replace(line, actions=tuple(summed.values()))
 
 
 def state_stations(solution: LineSolution, states: Sequence[State], count: int = 41) -> Stations:

@@ -1,0 +1,56 @@
+"""What the sheet shows of each line beside its results: governing states, distributed by hand."""
+
+from __future__ import annotations
+
+from typing import cast
+
+from analysis_core.distribution.record import distribute
+from analysis_core.effects.states import State, state_line
+from analysis_core.errors import AnalysisError
+from analysis_core.fixed_end_rows import fixed_end_rows
+from analysis_core.record_rows import closing_note, record_tables
+from analysis_core.results import LineResult
+from analysis_core.sheet.distribution import distribution, fixed_ends
+from analysis_core.sheet.html import Markup, tag
+from analysis_core.units import DisplayUnits
+
+_SHOWN = ("sagging", "hogging")
+_MOST = 4
+
+
+def distribution_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
+    """Return the recorded distributions of the states that govern the moments of a line."""
+    if result.states is None or result.parts is None:
+        return []
+    states = [s for s in cast(tuple[State, ...], result.states()) if _governs_moment(s)]
+    parts: list[Markup] = []
+    for state in states[:_MOST]:
+        parts += _one(result, state, units)
+    if len(states) > _MOST:
+        left = "; ".join(s.source for s in states[_MOST:])
+        parts.append(tag("p", f"Not written down, for length: {left}.", class_="verification"))
+    return [tag("h3", "Distribution of the governing states"), *parts] if parts else []
+
+
+def _one(result: LineResult, state: State, units: DisplayUnits) -> list[Markup]:
+    assert result.parts is not None
+    line = state_line(result.parts.line, state, case=state.source)
+    unit = units.symbol("moment")
+    governs = ", ".join(e for e in state.effects if e.startswith(_SHOWN))
+    try:
+        record = distribute(line, state.source)
+    except AnalysisError as error:
+        return [tag("p", f"{state.source}: {error}")]
+    shown = [tag("p", f"{state.source} governs {governs}.", class_="governs")]
+    rows = fixed_end_rows(line, units)
+    if rows:
+        shown.append(fixed_ends(rows, unit))
+    tables = record_tables(record, units)
+    for number, each in enumerate(tables):
+        closing = closing_note(record, units) if number == len(tables) - 1 else ""
+        shown.append(distribution(each, closing, unit))
+    return shown
+
+
+def _governs_moment(state: State) -> bool:
+    return any(effect.startswith(_SHOWN) for effect in state.effects)

@@ -1,0 +1,102 @@
+"""Fixed-end moments with their formulas and numbers, for the calculation sheet."""
+
+from __future__ import annotations
+
+from analysis_core.distribution.fixed_end import end_actions
+from analysis_core.model import (
+    DistributedForce,
+    ImposedCurvature,
+    Line,
+    Member,
+    MemberAction,
+    PointForce,
+    PointMoment,
+)
+from analysis_core.units import DisplayUnits
+
+
+def fixed_end_rows(line: Line, units: DisplayUnits) -> list[tuple[str, str, str, str, str]]:
+    """Return member, action, formula with numbers, and the moments at start and end.
+
+    Both ends held; clockwise on the member; display units.
+    """
+    rows = []
+    for member in line.members:
+        for action in line.actions:
+            if getattr(action, "member", None) != member.id:
+                continue
+            assert isinstance(
+                action, DistributedForce | PointForce | PointMoment | ImposedCurvature
+            )
+            found = end_actions(member, action)
+            if abs(found.start_moment) + abs(found.end_moment) == 0.0:
+                continue
+            rows.append((
+                f"{member.start}-{member.end}",
+                _what(action, units),
+                _formula(member, action, units),
+                units.number(found.start_moment, "moment"),
+                units.number(found.end_moment, "moment"),
+            ))  # fmt: skip
+    return rows
+
+
+def _what(action: MemberAction, units: DisplayUnits) -> str:
+    match action:
+        case DistributedForce():
+            ends = [_value(action, action.start), _value(action, action.end)]
+            size = units.number(ends[0], "line load")
+            if abs(ends[0] - ends[1]) > 1e-9 * max(abs(e) for e in ends):
+                size += f" to {units.number(ends[1], 'line load')}"
+            return f"{size} {units.symbol('line load')}{_stretch(action, units)}"
+        case PointForce():
+            place = units.text(action.position, "length")
+            return f"{units.text(action.transverse, 'force')} at {place}"
+        case PointMoment():
+            place = units.text(action.position, "length")
+            return f"{units.text(action.moment, 'moment')} at {place}"
+        case ImposedCurvature():
+            return f"curvature {action.curvature:.3e} 1/m"
+
+
+def _stretch(action: DistributedForce, units: DisplayUnits) -> str:
+    start, end = units.number(action.start, "length"), units.text(action.end, "length")
+    return f" from {start} to {end}"
+
+
+def _formula(member: Member, action: MemberAction, units: DisplayUnits) -> str:
+    length = member.length
+    span = units.number(length, "length")
+    if not member.prismatic:
+        return "by integration along the member, whose rigidity varies"
+    match action:
+        case DistributedForce() if _uniform(action) and _whole(action, length):
+            w = units.number(action.transverse[0], "line load")
+            return f"∓ w L²/12 = {w} · {span}²/12"
+        case DistributedForce():
+            return "∓ ∫ w(s) s (L-s)²/L² ds and ± ∫ w(s) s² (L-s)/L² ds over its stretch"
+        case PointForce():
+            force = units.number(action.transverse, "force")
+            a = units.number(action.position, "length")
+            b = units.number(length - action.position, "length")
+            return f"- P a b²/L² = {force} · {a} · {b}²/{span}²; + P a² b/L²"
+        case PointMoment():
+            a = units.number(action.position, "length")
+            b = units.number(length - action.position, "length")
+            return f"M b (b-2a)/L², M a (a-2b)/L² with a = {a}, b = {b}"
+        case ImposedCurvature():
+            return "EI κ at each end over the whole length; else by integration"
+
+
+def _uniform(action: DistributedForce) -> bool:
+    return bool(action.transverse) and not any(action.transverse[1:])
+
+
+def _whole(action: DistributedForce, length: float) -> bool:
+    slack = 1e-9 * length
+    return action.start <= slack and action.end >= length - slack
+
+
+def _value(action: DistributedForce, s: float) -> float:
+    v = s - action.start
+    return float(sum(c * v**i for i, c in enumerate(action.transverse)))
