@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Sequence, Set
 
 from analysis_core.errors import ModelError
 from analysis_core.idealise.draft import Bar, Draft
@@ -18,9 +18,18 @@ _PLACEHOLDER = 1.0
 
 
 def build(
-    draft: Draft, actions: Sequence[Action], table: PropertyTable, *, shear_flexible: bool, log: Log
+    draft: Draft,
+    actions: Sequence[Action],
+    table: PropertyTable,
+    *,
+    shear_flexible: bool,
+    told: Set[str],
+    log: Log,
 ) -> Line | None:
-    """Return the line of a draft, None (with a finding) where its parts do not fit together."""
+    """Return the line of a draft, None (with a finding) where its parts do not fit together.
+
+    ``told``: members whose oblique bending the reader reported already.
+    """
     number_spans(draft)
     stretches: dict[str, tuple[Stretch, ...] | None] = {}
     faults = [clause for _, clause in draft.faults]
@@ -38,6 +47,7 @@ def build(
             properties,
             _across(draft, bar),
             shear_flexible=shear_flexible,
+            told=bar.member.global_id in told,
             log=log,
             line=draft.mark,
         )

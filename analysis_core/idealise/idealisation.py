@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import gc
+
 from analysis_core.building import AxisMember, Building, Carrier, Connection
 from analysis_core.idealise import analytical, meetings
 from analysis_core.idealise.actions import put_axis_actions, put_node_actions
@@ -39,6 +41,16 @@ def idealise(building: Building, settings: Settings) -> LineModel:
     Never raises for what a model may hold: a line that cannot be analysed carries the reason in
     ``fault``, and a finding of severity "error" names it.
     """
+    was_on = gc.isenabled()
+    gc.disable()  # a whole building makes many objects that live on, and no rubbish in circles
+    try:
+        return _idealised(building, settings)
+    finally:
+        if was_on:
+            gc.enable()
+
+
+def _idealised(building: Building, settings: Settings) -> LineModel:
     log = Log()
     chooser = Chooser()
     table = PropertyTable(settings, chooser)
@@ -73,8 +85,10 @@ def idealise(building: Building, settings: Settings) -> LineModel:
     put_temperature_actions(building, placer, members, table, log)
     put_self_weight(weight, placer, set(members), table, log)
 
+    spelled: dict[str, str] = {}
+
     def case_name(name: str) -> str:
-        return canonical(name, cases)
+        return spelled.setdefault(name.casefold(), canonical(name, cases))
 
     put_job_actions(building.members, placer, settings, chooser, table, case_name, log)
     put_area_loads(building, placer, settings, chooser, case_name, log)
@@ -87,7 +101,8 @@ def idealise(building: Building, settings: Settings) -> LineModel:
 
     used = [action.case for actions in placer.actions.values() for action in actions]
     cases = with_used(cases, used, settings, log)
-    lines = _lines(scheme, placer.actions, table, settings, log)
+    told = {e for f in building.findings if f.slug == "oblique-bending" for e in f.elements}
+    lines = _lines(scheme, placer.actions, table, settings, told, log)
     transfers = _transfers(scheme, lines)
     chooser.report_unused(log)
     return LineModel(
@@ -113,6 +128,7 @@ def _lines(
     actions: dict[int, list[Action]],
     table: PropertyTable,
     settings: Settings,
+    told: set[str],
     log: Log,
 ) -> dict[str, Line]:
     lines = {}
@@ -122,6 +138,7 @@ def _lines(
             actions.get(number, ()),
             table,
             shear_flexible=settings.analysis.shear_flexible,
+            told=told,
             log=log,
         )
         if line is not None:

@@ -40,19 +40,22 @@ def rigidity_of(
     across: Vector,
     *,
     shear_flexible: bool,
+    told: bool,
     log: Log,
     line: str,
 ) -> tuple[Stretch, ...]:
     """Return the rigidity along a member that bends so that its axis moves along ``across``.
 
     ``across`` is the unit vector in the plane of bending perpendicular to the member.  The
-    properties are without fault.
+    properties are without fault.  ``told``: the reader said already that the section as it lies
+    bends obliquely.
     """
     section, material = properties.section, properties.material
     assert section is not None
     assert material is not None
     turn = _Turn.of(member, across)
-    _report_oblique(member, section, turn, log, line)
+    if not (told and abs(turn.sin) < _OBLIQUE):
+        _report_oblique(member, section, turn, log, line)
     modulus = material.elastic_modulus
     shear = None
     if shear_flexible:
