@@ -107,6 +107,29 @@ def state_stations(solution: LineSolution, states: Sequence[State], count: int =
     return Stations(tuple(c.name for c in combined), at.x, moment, shear, deflection)
 
 
+def _sum(one: Action, other: Action) -> Action:
+    """Add two actions of one kind at one place."""
+    if isinstance(one, DistributedForce) and isinstance(other, DistributedForce):
+        return replace(
+            one,
+            transverse=_added(one.transverse, other.transverse),
+            axial=_added(one.axial, other.axial),
+            source="",
+        )
+    assert isinstance(one, PointForce)
+    assert isinstance(other, PointForce)
+    return replace(
+        one,
+        transverse=one.transverse + other.transverse,
+        axial=one.axial + other.axial,
+        source="",
+    )
+
+
+def _added(one: tuple[float, ...], other: tuple[float, ...]) -> tuple[float, ...]:
+    return tuple(a + b for a, b in zip_longest(one, other, fillvalue=0.0))
+
+
 def _state(table: FactorTable, extreme: Extreme, parts: Floats, *, largest: bool) -> State | None:
     """Of the rows that the source names, the one whose sum is the extreme one."""
     sign = 1.0 if largest else -1.0
