@@ -18,10 +18,7 @@ from analysis_core.distribution.cycles import Cycles, End, Order, Row, distribut
 from analysis_core.distribution.loads import gather
 from analysis_core.distribution.mechanisms import refuse_idle_couples
 from analysis_core.distribution.mirror import Mirror, Parity, mirror, parity
-from analysis_core.distribution.release import CLAMP
 from analysis_core.distribution.skeleton import (
-    Skeleton,
-    support_stiffness,
     times,
     translation_sizes,
 )
@@ -133,10 +130,9 @@ class _Recorder:
         self.case, self.order, self.max_sweeps = case, order, max_sweeps
         frame = self.frame
         self.held = frame.held.astype(np.float64)
-        self.held[..., :1] += _by_turned_supports(frame)
         self.held[..., 1:] *= UNIT
         self.couples = np.zeros((len(frame.line.joints), self.held.shape[2]))
-        self.couples[:, 0] = frame.tails.forces[:, 2, 0] + _by_turned_ground(frame)
+        self.couples[list(frame.joints), 0] = frame.couples[:, 0]
         self.mirrored = None
         if frame.bars and short_cuts:
             self.mirrored = mirror(frame.line, frame.bars, frame.joints)
@@ -243,29 +239,6 @@ def _on_bars(
             mirrored, kind = half
             sums[mirrored.image(end.bar, end.side)] = -moment if kind == "symmetric" else moment
     return sums
-
-
-def _by_turned_supports(frame: Skeleton) -> Floats:
-    """Held moments (B, 2, 1) from rotations that rigid supports are prescribed."""
-    moments = np.zeros((len(frame.bars), 2, 1))
-    rigid = dict(zip(frame.joints, support_stiffness(frame) == CLAMP, strict=True))
-    turn = frame.loads.movements[:, 2]
-    for index, bar in enumerate(frame.bars):
-        start, end = (turn[j] * float(rigid[j]) for j in (bar.start, bar.end))
-        near, far = float(bar.stiffness.near), float(bar.stiffness.far)
-        carried = float(bar.stiffness.carried)
-        moments[index, 0] = near * start + carried * end
-        moments[index, 1] = carried * start + far * end
-    return moments
-
-
-def _by_turned_ground(frame: Skeleton) -> Floats:
-    """Couples (J,) on joints whose support is a spring on ground that turns."""
-    couples = np.zeros(len(frame.line.joints))
-    for joint, stiffness in zip(frame.joints, support_stiffness(frame), strict=True):
-        if stiffness != CLAMP:
-            couples[joint] = float(stiffness) * frame.loads.movements[joint, 2, 0]
-    return couples
 
 
 def _read_only(array: Floats) -> Floats:

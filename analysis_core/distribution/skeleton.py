@@ -27,7 +27,9 @@ class Skeleton:
 
     ``bars`` have their stiffness in extended precision.  unit (B, m): clockwise rotation of the
     bars' chords per metre of each translation; held (B, 2, C + m): end moments with all joints
-    held, by actions and prescribed settlements, then per metre of each translation.
+    held, by actions and prescribed movements, then per metre of each translation.  turned (n, C)
+    rad: rotations that rigid supports are prescribed; couples (n, C) N·m: on the joints, those
+    from tails and from ground that turns under springs included.
     """
 
     line: Line
@@ -39,6 +41,8 @@ class Skeleton:
     moves: Translations
     unit: Long
     held: Long
+    turned: Floats
+    couples: Floats
 
     @property
     def joints(self) -> tuple[int, ...]:
@@ -66,13 +70,33 @@ def skeleton(line: Line, loads: Loads) -> Skeleton:
     held = np.concatenate([_moved(bars, given), _moved(bars, unit)], axis=2)
     for index, own in enumerate(actions):
         held[index, :, : given.shape[1]] += own.moments
-    return Skeleton(line, loads, reduction, bars, actions, tails, moves, unit, held)
+    joints = list(reduction.joints)
+    support = support_stiffness(line, joints)[:, None]
+    ground = loads.movements[joints, 2]
+    turned = np.where(support == CLAMP, ground, 0.0)
+    _turn_supports(bars, joints, turned, held)
+    springs = np.where(support == CLAMP, 0.0, support).astype(np.float64)
+    couples = tails.forces[joints, 2] + springs * ground
+    return Skeleton(
+        line, loads, reduction, bars, actions, tails, moves, unit, held, turned, couples
+    )
 
 
-def support_stiffness(frame: Skeleton) -> Long:
+def support_stiffness(line: Line, joints: Sequence[int]) -> Long:
     """Return the rotational stiffness (n) of the supports, ``CLAMP`` where rigid."""
-    found = [holds(frame.line.joints[joint])["rotation"] for joint in frame.joints]
+    found = [holds(line.joints[joint])["rotation"] for joint in joints]
     return np.array([CLAMP if k == RIGID else k for k in found], dtype=np.longdouble)
+
+
+def _turn_supports(bars: Sequence[Bar], joints: Sequence[int], turned: Floats, held: Long) -> None:
+    """Add to the held moments what supports do that are turned by ``turned`` (n, C)."""
+    if not turned.any():
+        return
+    place = {joint: index for index, joint in enumerate(joints)}
+    for index, bar in enumerate(bars):
+        start, end, ends = turned[place[bar.start]], turned[place[bar.end]], bar.stiffness
+        held[index, 0, : turned.shape[1]] += ends.near * start + ends.carried * end
+        held[index, 1, : turned.shape[1]] += ends.carried * start + ends.far * end
 
 
 def translation_sizes(frame: Skeleton, locked: Long, swayed: Long) -> tuple[Long, float]:

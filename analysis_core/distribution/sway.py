@@ -22,7 +22,7 @@ from analysis_core.distribution.bars import Bar, Reduction
 from analysis_core.distribution.linear import Long
 from analysis_core.distribution.loads import Loads
 from analysis_core.distribution.mechanisms import refuse_if_loose
-from analysis_core.distribution.release import SUSPECT, rotations
+from analysis_core.distribution.release import SUSPECT, Released, release
 from analysis_core.distribution.skeleton import (
     Skeleton,
     skeleton,
@@ -81,16 +81,18 @@ def balance(line: Line, loads: Loads) -> Balanced:
     do not go together.
     """
     frame = skeleton(line, loads)
-    turned, weakest = _turn(frame)
-    ends = _end_moments(frame, turned)
+    released = _release(frame)
     cases = frame.cases
-    locked, swayed = ends[..., :cases], ends[..., cases:]
+    locked, swayed = released.moments[..., :cases], released.moments[..., cases:]
     sizes, weakest_sway = translation_sizes(frame, locked, swayed)
-    if min(weakest, weakest_sway) <= SUSPECT:
+    if min(released.weakest, weakest_sway) <= SUSPECT:
         refuse_if_loose(line)
     total = _exact_hinges(frame, locked + times(swayed, sizes))
     joint_turns = np.zeros((len(line.joints), cases))
-    joint_turns[list(frame.joints)] = turned[:, :cases] + times(turned[:, cases:], sizes)
+    turned = released.rotations
+    joint_turns[list(frame.joints)] = (
+        frame.turned + turned[:, :cases] + times(turned[:, cases:], sizes)
+    )
     moves = frame.moves
     shifts = moves.given + times(moves.modes.transpose(1, 2, 0), sizes)
     return Balanced(
@@ -104,36 +106,19 @@ def balance(line: Line, loads: Loads) -> Balanced:
     )
 
 
-def _turn(frame: Skeleton) -> tuple[Long, float]:
-    """Rotations (n, C + m) of the joints that balance held moments, couples and supports."""
-    joints = list(frame.joints)
-    place = {joint: index for index, joint in enumerate(joints)}
-    unbalance = np.zeros((len(joints), frame.held.shape[2]), dtype=np.longdouble)
-    for index, bar in enumerate(frame.bars):
-        unbalance[place[bar.start]] += frame.held[index, 0]
-        unbalance[place[bar.end]] += frame.held[index, 1]
-    support = support_stiffness(frame)
-    grounds = support[:, None] * frame.loads.movements[joints, 2]
-    unbalance[:, : frame.cases] -= frame.tails.forces[joints, 2] + grounds
+def _release(frame: Skeleton) -> Released:
+    """Balance the moments of all cases and of all translations."""
+    couples = np.zeros((len(frame.joints), frame.held.shape[2]), dtype=np.longdouble)
+    couples[:, : frame.cases] = frame.couples
     fastened = {
         joint
         for bar in frame.bars
-        for joint, released in zip((bar.start, bar.end), bar.released, strict=True)
-        if not released
+        for joint, loose in zip((bar.start, bar.end), bar.released, strict=True)
+        if not loose
     }
     fastened |= {root for _, root in frame.reduction.tails}
-    return rotations(frame.bars, joints, support, unbalance, fastened)
-
-
-def _end_moments(frame: Skeleton, turned: Long) -> Long:
-    place = {joint: index for index, joint in enumerate(frame.joints)}
-    moments = frame.held.copy()
-    for index, bar in enumerate(frame.bars):
-        start, end = turned[place[bar.start]], turned[place[bar.end]]
-        ends = bar.stiffness
-        moments[index, 0] += ends.near * start + ends.carried * end
-        moments[index, 1] += ends.carried * start + ends.far * end
-    return moments
+    support = support_stiffness(frame.line, frame.joints)
+    return release(frame.bars, frame.joints, support, frame.held, couples, fastened)
 
 
 def _exact_hinges(frame: Skeleton, moments: Long) -> Long:
