@@ -11,7 +11,7 @@ from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass, replace
 from datetime import datetime
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from analysis_core import idealise
 from analysis_core.building import Building
@@ -20,8 +20,6 @@ from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
-from analysis_core.ifc import writer
-from analysis_core.ifc.writer import PostReport
 from analysis_core.model import LineModel
 from analysis_core.results import LineResult, Outcome
 from analysis_core.revision import Reconciliation
@@ -29,6 +27,10 @@ from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
 from analysis_core.solving import Memory, solve_lines
 from analysis_core.units import display_units
+
+if TYPE_CHECKING:
+    from analysis_core.ifc.writer import PostReport
+    from analysis_core.sheet.html import Markup
 
 Progress = Callable[[str, float], None]
 
@@ -178,6 +180,8 @@ def post(
     analysis_model: bool = False,
 ) -> PostReport:
     """Write an outcome into a copy of its model, or the model itself.  Raises IfcWriteError."""
+    from analysis_core.ifc import writer  # posting is not always wanted; keep the start quick
+
     return writer.post(source, target, outcome, analysis_model=analysis_model, progress=progress)
 
 
@@ -221,7 +225,6 @@ def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
     from analysis_core.calculation import distribution_parts
     from analysis_core.sheet.document import sheet as write_sheet
-    from analysis_core.sheet.html import Markup
 
     units = display_units(settings.display.system, settings.display.units)
     today = date or datetime.now().date().isoformat()
