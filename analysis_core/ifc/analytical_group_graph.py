@@ -184,7 +184,8 @@ class GroupGraph:
                 state[child] = 1
                 stack.append((child, iter(tuple(self.groups[child].members))))
 
-        for key in self.groups:
+        # From the top down, so that what hangs on the circle stays below its case.
+        for key in sorted(self.groups, key=lambda k: (bool(self._parents.get(k)), k)):
             if key not in state:
                 visit(key)
 
