@@ -57,8 +57,11 @@ def beam_line(seed: int, *, ratio: int = 2, plain: bool = False) -> Line:
     return replace(line, actions=tuple(actions))
 
 
-def gable(seed: int) -> Line:
-    """Return a frame of one or two bays with rafters, leaning legs, pins, springs and hinges."""
+def gable(seed: int, *, ratio: int = 1) -> Line:
+    """Return a frame of one or two bays with rafters, leaning legs, pins, springs and hinges.
+
+    EI spreads over ``ratio`` decades.
+    """
     rng = random.Random(seed)
     joints: list[Joint] = []
     members: list[Member] = []
@@ -70,7 +73,7 @@ def gable(seed: int) -> Line:
     def member(start: int, end: int, length: float, released: bool = False) -> None:
         spring = FREE if released else rng.choice((RIGID, RIGID, RIGID, 4e6))
         members.append(
-            Member(len(members), start, end, _pieces(rng, length, 1), "span", RIGID, spring)
+            Member(len(members), start, end, _pieces(rng, length, ratio), "span", RIGID, spring)
         )
 
     def foot() -> Support:
