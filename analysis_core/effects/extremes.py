@@ -79,39 +79,41 @@ def _fixed(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
 
 
 def _varied(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
-    """Each row is the sum of the adverse parts, on ever smaller stretches."""
+    """Each row is the sum of its adverse parts, on ever smaller stretches."""
     size = by_part.shape[1]
     best, scale = np.full(size, -np.inf), np.zeros(size)
     pieces: list[_Found] = []
+
+    def found(where: Stretches, t: Floats, value: Floats) -> None:
+        pieces.append(_Found(where.member, where.row, where.segment, t, value))
+        np.maximum.at(best, where.member, value)
+        np.maximum.at(scale, where.member, np.abs(value))
+
     for _ in range(_HALVINGS):
         chosen = by_part[s.segment, s.member].swapaxes(0, 1)  # (P, n, C)
-        lows, highs = table.low[s.row], table.high[s.row]
-        at_low, at_high = (evaluate(chosen, t[:, None]) for t in (s.low, s.high))
-        values = [_adverse(effects, lows, highs) for effects in (at_low, at_high)]
-        for t, value in zip((s.low, s.high), values, strict=True):
-            pieces.append(_Found(s.member, s.row, s.segment, t, value))
-            np.maximum.at(best, s.member, value)
-            np.maximum.at(scale, s.member, np.abs(value))
         local = restricted(chosen, s.low[:, None], s.high[:, None])
-        margin = _margin(local, lows, highs)
-        reach = np.maximum(*values) + margin
-        goes_on = reach >= best[s.member] - EQUAL * scale[s.member]
-        goes_on &= margin > EQUAL * scale[s.member]
-        if not goes_on.any():
-            break
-        s, local, lows, highs = _only(s, goes_on), local[:, goes_on], lows[goes_on], highs[goes_on]
+        lows, highs = table.low[s.row], table.high[s.row]
         sign, settled = _signs(local, lows, highs)
         factors = np.where(sign > 0.0, highs, lows)[settled]
-        zero = np.zeros(len(factors))
-        value, u = largest_between(_weighted(local[:, settled], factors), zero, zero + 1.0)
-        done = _only(s, settled)
-        pieces.append(
-            _Found(
-                done.member, done.row, done.segment, done.low + u * (done.high - done.low), value
-            )
-        )
-        np.maximum.at(best, done.member, value)
-        s = _halved(_only(s, ~settled))
+        one = np.ones(len(factors))
+        value, u = largest_between(_weighted(local[:, settled], factors), 0.0 * one, one)
+        done, rest = _only(s, settled), ~settled
+        found(done, done.low + u * (done.high - done.low), value)
+        if not rest.any():
+            break
+        s, local, lows, highs = _only(s, rest), local[:, rest], lows[rest], highs[rest]
+        ends = [_adverse(evaluate(local, u), lows, highs) for u in (0.0, 0.5, 1.0)]
+        found(s, s.low, ends[0])
+        found(s, 0.5 * (s.low + s.high), ends[1])
+        found(s, s.high, ends[2])
+        margin = np.tile(_margin(local, lows, highs) / 4.0, 2)
+        halves = _halved(s)
+        reach = np.maximum(np.concatenate(ends[:2]), np.concatenate(ends[1:])) + margin
+        goes_on = reach >= best[halves.member] - EQUAL * scale[halves.member]
+        goes_on &= margin > EQUAL * scale[halves.member]
+        if not goes_on.any():
+            break
+        s = _only(halves, goes_on)
     return _Found(
         *(
             np.concatenate([getattr(piece, name) for piece in pieces])

@@ -132,9 +132,10 @@ def _pruned(
     over = np.maximum(0.0, 4.0 * margin[segment, row, member] - rise) ** 2
     with np.errstate(divide="ignore", invalid="ignore"):
         over = np.where(over > 0.0, over / (16.0 * margin[segment, row, member]), 0.0)
-    place, chosen = np.nonzero(np.maximum(values[:-1], values[1:]) + over >= best[member])
-    step = 1.0 / (samples - 1)
-    return Stretches(member[chosen], row[chosen], segment[chosen], place * step, (place + 1) * step)
+    within = np.maximum(values[:-1], values[1:]) + over >= best[member]
+    which, place = np.nonzero(within.T)
+    chosen, low, high = _runs(which, place, samples)
+    return Stretches(member[chosen], row[chosen], segment[chosen], low, high)
 
 
 def _at_ends(polynomials: Floats) -> Floats:
@@ -185,9 +186,23 @@ def _between(values: Floats, margin: Floats, scale: Floats) -> Stretches:
     """Stretches between places (S, K, N, B) whose reach is not below what is reached elsewhere."""
     best = values.max(axis=(0, 1, 2)) - EQUAL * scale
     within = values + margin >= best
-    place, segment, row, member = np.nonzero(within[:-1] | within[1:])
-    step = 1.0 / (len(values) - 1)
-    return Stretches(member, row, segment, place * step, (place + 1) * step)
+    place_last = np.moveaxis(within[:-1] | within[1:], 0, -1)
+    *where, place = np.nonzero(place_last)
+    number = np.ravel_multi_index(tuple(where), place_last.shape[:-1])
+    number, low, high = _runs(number, place, len(values))
+    segment, row, member = np.unravel_index(number, place_last.shape[:-1])
+    return Stretches(member, row, segment, low, high)
+
+
+def _runs(which: Integers, place: Integers, samples: int) -> tuple[Integers, Floats, Floats]:
+    """Join intervals that follow one another: of what, from t = low to high."""
+    if not len(which):
+        return which, np.zeros(0), np.zeros(0)
+    breaks = (np.diff(which) != 0) | (np.diff(place) != 1)
+    first = np.concatenate([[0], np.flatnonzero(breaks) + 1])
+    last = np.concatenate([first[1:] - 1, [len(which) - 1]])
+    step = 1.0 / (samples - 1)
+    return which[first], place[first] * step, np.minimum((place[last] + 1) * step, 1.0)
 
 
 def _closed(polynomials: Floats) -> tuple[Floats, Floats]:
