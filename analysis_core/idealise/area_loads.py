@@ -11,8 +11,9 @@ from analysis_core.idealise.area_receivers import Receiver, Receivers
 from analysis_core.idealise.log import Log, listed
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.plan import Spot
+from analysis_core.idealise.region import Region
 from analysis_core.idealise.selectors import Chooser
-from analysis_core.idealise.tributary import Region, Share, Spread, shares
+from analysis_core.idealise.tributary import Share, Spread, shares
 from analysis_core.model import DistributedForce, PointForce
 from analysis_core.settings import AreaActionSetting, Settings
 

@@ -6,15 +6,12 @@ Every candidate is measured; ``chains`` and ``bearing_choice`` decide among them
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import Literal
 
-import numpy as np
-
 from analysis_core.building import AxisMember, Carrier
 from analysis_core.idealise.beams import Beam
-from analysis_core.idealise.pairs import Floats, overlapping
 from analysis_core.idealise.plan import (
     Spot,
     area,
@@ -36,7 +33,7 @@ _ALONG = 1.0
 # Undersides and upper sides nearer than this touch (m).
 _LIFT = 0.1
 # Beams at a flatter angle than this run side by side rather than meet.
-_SKEW = math.sin(math.radians(15.0))
+SKEW = math.sin(math.radians(15.0))
 
 
 @dataclass(frozen=True, slots=True)
@@ -70,69 +67,6 @@ class Bearing:
         return self.high - self.low
 
 
-def find_bearings(
-    beams: list[Beam], carriers: Sequence[Carrier], tolerances: Tolerances
-) -> dict[str, list[Bearing]]:
-    """Return every place where each beam may bear, by GlobalId and in order along it."""
-    known = [c for c in carriers if len(c.corners) >= 3 and kind_of(c) is not None]
-    known.sort(key=lambda carrier: carrier.global_id)
-    found: dict[str, list[Bearing]] = {beam.id: [] for beam in beams}
-    boxes = _boxes_of_beams(beams, tolerances)
-    for i, j in _pairs(boxes, boxes_of_carriers(known)):
-        found[beams[i].id].extend(_on_carrier(beams[i], known[j], tolerances))
-    for i, j in _crossing_pairs(beams, boxes, tolerances):
-        found[beams[i].id].extend(_on_beam(beams[i], beams[j], tolerances))
-    for bearings in found.values():
-        bearings.sort(key=lambda b: (b.along, RANK[b.kind], b.id))
-    return found
-
-
-def _pairs(first: Floats, second: Floats) -> Iterator[tuple[int, int]]:
-    i, j = overlapping(first, second)
-    return zip(i.tolist(), j.tolist(), strict=True)
-
-
-def _boxes_of_beams(beams: list[Beam], tolerances: Tolerances) -> Floats:
-    """Boxes around beams with everything near enough to carry them."""
-    ends = np.array([(b.member.start, b.member.end) for b in beams]).reshape(-1, 2, 3)
-    around = np.array(
-        [tolerances.bearing + b.half_width + max(b.below, b.above) for b in beams]
-    ).reshape(-1, 1)
-    return np.hstack([ends.min(axis=1) - around, ends.max(axis=1) + around])
-
-
-def boxes_of_carriers(carriers: Sequence[Carrier]) -> Floats:
-    """Return the bounding boxes of carriers that have an outline, (n, 6)."""
-    rows = []
-    for carrier in carriers:
-        xs, ys = zip(*carrier.corners, strict=True)
-        rows.append((min(xs), min(ys), carrier.bottom, max(xs), max(ys), carrier.top))
-    return np.array(rows, float).reshape(-1, 6)
-
-
-def _crossing_pairs(
-    beams: list[Beam], boxes: Floats, tolerances: Tolerances
-) -> Iterator[tuple[int, int]]:
-    """Pairs of beams whose axes cross in plan, on both or within reach of their ends."""
-    i, j = overlapping(boxes, boxes)
-    keep = i != j
-    i, j = i[keep], j[keep]
-    origin = np.array([b.ray.origin for b in beams]).reshape(-1, 2)
-    way = np.array([b.ray.direction for b in beams]).reshape(-1, 2)
-    run = np.array([b.run for b in beams])
-    half = np.array([b.half_width for b in beams])
-    turn = way[i, 0] * way[j, 1] - way[i, 1] * way[j, 0]
-    keep = np.abs(turn) >= _SKEW
-    i, j, turn = i[keep], j[keep], turn[keep]
-    apart = origin[j] - origin[i]
-    along = (apart[:, 0] * way[j, 1] - apart[:, 1] * way[j, 0]) / turn
-    there = (apart[:, 0] * way[i, 1] - apart[:, 1] * way[i, 0]) / turn
-    reach = tolerances.bearing + tolerances.join
-    near = (along >= -reach - half[j] / _SKEW) & (along <= run[i] + reach + half[j] / _SKEW)
-    near &= (there >= -reach - half[i] / _SKEW) & (there <= run[j] + reach + half[i] / _SKEW)
-    return zip(i[near].tolist(), j[near].tolist(), strict=True)
-
-
 def kind_of(carrier: Carrier | AxisMember) -> Kind | None:
     """Return the kind of bearing that a class of element makes, None where it makes none."""
     name = carrier.ifc_class.casefold()
@@ -155,7 +89,8 @@ _CLASSES: tuple[tuple[str, Kind], ...] = (
 )
 
 
-def _on_carrier(beam: Beam, carrier: Carrier, tolerances: Tolerances) -> Iterator[Bearing]:
+def bearings_on_carrier(beam: Beam, carrier: Carrier, tolerances: Tolerances) -> Iterator[Bearing]:
+    """Yield where a beam may bear on a column, wall, footing or slab near it."""
     kind = kind_of(carrier)
     highest = max(beam.level(0.0), beam.level(beam.run))
     if kind is None or carrier.bottom >= highest:  # it stands on the beam, or higher
@@ -329,13 +264,14 @@ def _lengthwise(
         )  # fmt: skip
 
 
-def _on_beam(beam: Beam, other: Beam, tolerances: Tolerances) -> Iterator[Bearing]:
+def bearings_on_beam(beam: Beam, other: Beam, tolerances: Tolerances) -> Iterator[Bearing]:
+    """Yield where a beam may bear on another: on top of it, or at its side."""
     crossing_at = meeting(beam.ray, other.ray)
     if crossing_at is None:
         return
     (ax, ay), (bx, by) = beam.ray.direction, other.ray.direction
     turn = abs(ax * by - ay * bx)
-    if turn < _SKEW:
+    if turn < SKEW:
         return
     along, there = crossing_at
     half, own = other.half_width / turn, beam.half_width / turn

@@ -6,7 +6,8 @@ import math
 
 import numpy as np
 
-from analysis_core.idealise.bearings import boxes_of_carriers, kind_of
+from analysis_core.idealise.bearing_search import boxes_of_carriers
+from analysis_core.idealise.bearings import kind_of
 from analysis_core.idealise.draft import Draft, DraftJoint
 from analysis_core.idealise.log import Log
 from analysis_core.idealise.pairs import overlapping

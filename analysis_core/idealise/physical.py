@@ -8,7 +8,8 @@ from dataclasses import dataclass
 
 from analysis_core.building import AxisMember, Building, Carrier
 from analysis_core.idealise.beams import Beam, beam_of
-from analysis_core.idealise.bearings import Bearing, find_bearings, kind_of
+from analysis_core.idealise.bearing_search import find_bearings
+from analysis_core.idealise.bearings import Bearing, kind_of
 from analysis_core.idealise.chains import End, Link, chains, link_ends
 from analysis_core.idealise.legs import Legs
 from analysis_core.idealise.log import Log, listed, named

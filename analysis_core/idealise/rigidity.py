@@ -206,11 +206,13 @@ def _linear_taper(
     line: str,
 ) -> Stretch:
     """Every measure of the profile runs linearly from one end to the other."""
-    exact = None
     if abs(turn.sin) < 1e-6:
+        if start.shape == end.shape == "circle":  # the fourth power of a linear diameter
+            a, b = ((modulus * s.inertia) ** 0.25 for s in (start, end))
+            return Stretch(0.0, 1.0, (a, b - a), 4.0, shear)
         exact = _tapered_inertia(start, end)
-    if exact is not None:
-        return Stretch(0.0, 1.0, tuple(modulus * c for c in exact), 1.0, shear)
+        if exact is not None:
+            return Stretch(0.0, 1.0, tuple(modulus * c for c in exact), 1.0, shear)
     a, b = ((modulus * turn.inertia(s)) ** (1.0 / 3.0) for s in (start, end))
     log.add(
         "note",
@@ -224,7 +226,10 @@ def _linear_taper(
 
 
 def _tapered_inertia(start: Section, end: Section) -> Coefficients | None:
-    """Second moment of area of a tapering rectangle or I as an exact polynomial, else None."""
+    """Second moment of area of a tapering rectangle or I as a polynomial, else None.
+
+    Exact for sharp corners; what fillets add at both ends runs linearly between them.
+    """
     first, last = dict(start.dimensions), dict(end.dimensions)
 
     def measure(name: str) -> Coefficients | None:
@@ -236,7 +241,7 @@ def _tapered_inertia(start: Section, end: Section) -> Coefficients | None:
     if depth is None or width is None or start.shape != end.shape:
         return None
     result = multiply(width, power(depth, 3))
-    web, flange = measure("web"), measure("flange")
+    web, flange = measure("web_thickness"), measure("flange_thickness")
     if web is not None and flange is not None:
         hollow = add(width, tuple(-c for c in web))
         clear = add(depth, tuple(-2.0 * c for c in flange))
@@ -244,12 +249,10 @@ def _tapered_inertia(start: Section, end: Section) -> Coefficients | None:
     elif start.shape != "rectangle":
         return None
     result = tuple(c / 12.0 for c in result)
-    # The profile's fillets count at the ends; a formula that misses them by much is not it.
-    ends = (result[0], math.fsum(result))
-    wanted = (start.inertia, end.inertia)
-    if any(abs(a - b) > 1e-6 * b for a, b in zip(ends, wanted, strict=True)):
-        return None
-    return result
+    rest = start.inertia - result[0], end.inertia - math.fsum(result)
+    if any(abs(r) > 0.1 * s.inertia for r, s in zip(rest, (start, end), strict=True)):
+        return None  # these dimensions are not those of the section
+    return add(result, (rest[0], rest[1] - rest[0]))
 
 
 def _cut(

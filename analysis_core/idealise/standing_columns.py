@@ -2,11 +2,10 @@
 
 from __future__ import annotations
 
-import numpy as np
-
 from analysis_core.building import Carrier
 from analysis_core.idealise.beams import Beam
-from analysis_core.idealise.bearings import boxes_of_carriers, kind_of
+from analysis_core.idealise.bearing_search import boxes_of_beams, boxes_of_carriers
+from analysis_core.idealise.bearings import kind_of
 from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.log import Log, named
 from analysis_core.idealise.pairs import Floats, overlapping
@@ -96,9 +95,7 @@ def _feet(
     known = list(beams.values())
     if not loose or not known:
         return {}
-    ends = np.array([(b.member.start, b.member.end) for b in known]).reshape(-1, 2, 3)
-    around = np.array([b.half_width + max(b.above, b.below) + tolerances.join for b in known])
-    boxes = np.hstack([ends.min(axis=1) - around[:, None], ends.max(axis=1) + around[:, None]])
+    boxes = boxes_of_beams(known, tolerances.join)
     i, j = overlapping(_feet_boxes(loose, tolerances.bearing), boxes)
     result: dict[str, tuple[float, str, float]] = {}
     for a, b in zip(i.tolist(), j.tolist(), strict=True):

@@ -21,12 +21,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.idealise.plan import Spot
+from analysis_core.idealise.region import TOUCH, Floats, Region, cross
 
-Floats = NDArray[np.float64]
 Spread = Literal["panels", "two-way", "one-way"]
 
 _LONG = 2.0  # a panel longer than this many times its width carries one way
-_TOUCH = 1e-6
 _BESIDE = 0.35  # m; a line this far outside the edge of the area still carries it
 _ROUNDS = 14  # halvings of an interval on which the share is not linear
 _SLACK = 1e-4  # how far from linear a share may be, as a fraction
@@ -49,61 +48,6 @@ class Share:
     def total(self) -> float:
         """Area carried, m²."""
         return sum((b - a) * (u + v) / 2.0 for a, b, u, v in self.pieces) + sum(self.ends)
-
-
-class Region:
-    """A plan area with voids.  Measures what of a ray lies in it."""
-
-    def __init__(self, outline: Sequence[Spot], voids: Sequence[Sequence[Spot]] = ()) -> None:
-        rings = [_turned(np.asarray(outline, float), 1.0)]
-        rings += [_turned(np.asarray(void, float), -1.0) for void in voids]
-        self._rim = len(rings[0])
-        self.start = np.concatenate(rings)
-        self.end = np.concatenate([np.roll(ring, -1, axis=0) for ring in rings])
-        self.area = float(sum(_signed_area(ring) for ring in rings))
-
-    def crossings(self, base: Floats, direction: Floats) -> tuple[Floats, Floats]:
-        """Return (distance, sense) of every edge for rays from ``base`` (n, 2).
-
-        ``direction`` is (2,) or (n, 2).  Sense 1 where the ray leaves, -1 where it enters, 0
-        where it misses the edge.  An edge owns its lower end only, so that no corner counts twice.
-        """
-        direction = np.broadcast_to(direction, base.shape)
-        a = self.start[None] - base[:, None]
-        b = self.end[None] - base[:, None]
-        side_a = _cross(direction[:, None], a)
-        side_b = _cross(direction[:, None], b)
-        hit = (side_a > 0.0) != (side_b > 0.0)
-        step = np.where(hit, side_a - side_b, 1.0)
-        share = np.where(hit, side_a / step, 0.0)
-        spot = a + share[..., None] * (b - a)
-        distance = np.einsum("nkj,nj->nk", spot, direction)
-        return distance, np.where(hit, np.where(side_b > side_a, 1.0, -1.0), 0.0)
-
-    def chord(self, base: Floats, direction: Floats, reach: Floats) -> Floats:
-        """Return the length of each ray within the region, from its base to ``reach``."""
-        distance, sense = self.crossings(base, direction)
-        return np.asarray((sense * np.clip(distance, 0.0, reach[:, None])).sum(axis=1))
-
-    def sector(self, base: Floats, direction: Floats, reach: Floats) -> Floats:
-        """Return half the square of the lengths of rays within the region: area per radian."""
-        distance, sense = self.crossings(base, direction)
-        squares = np.clip(distance, 0.0, reach[:, None]) ** 2
-        return np.asarray(0.5 * (sense * squares).sum(axis=1))
-
-    def way_through(self, base: Floats, direction: Floats) -> tuple[Floats, Floats]:
-        """Return where each ray is first in the outline (0 from within), and first leaves it.
-
-        Voids do not count: a strip goes on behind an opening.  Both are infinite for a ray that
-        misses the outline.
-        """
-        distance, sense = self.crossings(base, direction)
-        distance, sense = distance[:, : self._rim], sense[:, : self._rim]
-        leaving = np.where((sense > 0.0) & (distance > _TOUCH), distance, np.inf).min(axis=1)
-        ahead = np.where((sense < 0.0) & (distance > _TOUCH), distance, np.inf).min(axis=1)
-        return np.where(
-            ahead < leaving, ahead, np.where(np.isfinite(leaving), 0.0, np.inf)
-        ), leaving
 
 
 @dataclass(frozen=True, slots=True)
@@ -191,13 +135,13 @@ class _Width:
             places = ((corners - origin) @ across) / scale
         else:
             places = (corners - origin) @ along
-        inner = np.unique(places[(places > _TOUCH) & (places < length - _TOUCH)].round(9))
+        inner = np.unique(places[(places > TOUCH) & (places < length - TOUCH)].round(9))
         if self.spread != "panels":
             return [([0.0, *map(float, inner), length], self.spread)]
         junctions = [0.0, *self._junctions(), length]
         result = []
         for low, high in itertools.pairwise(junctions):
-            if high - low > _TOUCH:
+            if high - low > TOUCH:
                 within = [float(p) for p in inner if low < p < high]
                 result.append(([low, *within, high], self._rule(low, high)))
         return result
@@ -246,7 +190,7 @@ class _Width:
                 spot = lines.start[other] + share * (lines.end[other] - lines.start[other])
                 found.append(float((spot - origin) @ along))
         length = float(lines.length[index])
-        return sorted(p for p in found if _TOUCH < p < length - _TOUCH)
+        return sorted(p for p in found if TOUCH < p < length - TOUCH)
 
     def _rule(self, low: float, high: float) -> str:
         """How the panel beside a stretch carries: across to it, past it, or both ways."""
@@ -264,13 +208,13 @@ class _Width:
 def _hits(base: Floats, direction: Floats, lines: _Lines, others: NDArray[np.bool_]) -> Floats:
     """Return the distance along ``direction`` from each base to the next line, infinite if none."""
     start, along, length = lines.start[others], lines.along[others], lines.length[others]
-    turn = _cross(direction[None], along)
+    turn = cross(direction[None], along)
     apart = start[None] - base[:, None]
     with np.errstate(divide="ignore", invalid="ignore"):
-        distance = _cross(apart, along[None]) / turn
-        place = _cross(apart, direction[None, None]) / turn
-    good = (np.abs(turn) > 1e-9) & (distance > _TOUCH)
-    good &= (place > -_TOUCH) & (place < length + _TOUCH)
+        distance = cross(apart, along[None]) / turn
+        place = cross(apart, direction[None, None]) / turn
+    good = (np.abs(turn) > 1e-9) & (distance > TOUCH)
+    good &= (place > -TOUCH) & (place < length + TOUCH)
     return np.asarray(np.where(good, distance, np.inf).min(axis=1, initial=np.inf))
 
 
@@ -297,14 +241,14 @@ def _nearest_reach(
         for reach in (c / (1.0 - g), -c / (1.0 + g)):
             foot = place + reach * drift
             good = np.isfinite(reach) & (reach > -1e-12)
-            good &= (foot > -_TOUCH) & (foot < length + _TOUCH)
+            good &= (foot > -TOUCH) & (foot < length + TOUCH)
             best = np.minimum(best, np.where(good, np.maximum(reach, 0.0), np.inf).min(axis=1))
         for point, beyond in ((start, -1.0), (end, 1.0)):
             away = point[None] - base[:, None]
             ahead = np.einsum("nkj,nj->nk", away, direction)
             reach = (away**2).sum(axis=2) / (2.0 * ahead)
             foot = place + reach * drift
-            outside = foot < _TOUCH if beyond < 0.0 else foot > length - _TOUCH
+            outside = foot < TOUCH if beyond < 0.0 else foot > length - TOUCH
             good = np.isfinite(reach) & (ahead > 1e-12) & outside
             best = np.minimum(best, np.where(good, reach, np.inf).min(axis=1))
     return np.where(np.isfinite(best), best, 1e6)
@@ -319,7 +263,7 @@ def _linear_pieces(
     lines from both its ends meet, or in halves.
     """
     done: list[tuple[float, float, float, float]] = []
-    work = [(a, b) for a, b in itertools.pairwise(breaks) if b - a > _TOUCH]
+    work = [(a, b) for a, b in itertools.pairwise(breaks) if b - a > TOUCH]
     for round_number in range(_ROUNDS + 1):
         if not work:
             break
@@ -337,7 +281,7 @@ def _linear_pieces(
                 continue
             kink = a + (b - a) * _kink(row)
             again += [(a, kink), (kink, b)]
-        work = [(a, b) for a, b in again if b - a > _TOUCH]
+        work = [(a, b) for a, b in again if b - a > TOUCH]
     return _joined(sorted(done))
 
 
@@ -352,7 +296,7 @@ def _joined(
             c, d, w, x = piece
             slack = _SLACK * max(0.1, u, v, w, x)
             meant = u + (v - u) * (d - a) / (b - a)
-            if abs(c - b) < _TOUCH and abs(w - v) < slack and abs(meant - x) < slack:
+            if abs(c - b) < TOUCH and abs(w - v) < slack and abs(meant - x) < slack:
                 result[-1] = (a, d, u, x)
                 continue
         result.append(piece)
@@ -402,17 +346,3 @@ def _end_area(
     base = np.broadcast_to(point, rays.shape)
     reach = _nearest_reach(base, rays, lines, others)
     return float(region.sector(base, rays, reach).sum()) * 2.0 * np.pi / _SECTORS
-
-
-def _turned(ring: Floats, sense: float) -> Floats:
-    """Return a ring that runs counter-clockwise (sense 1) or clockwise."""
-    return ring if _signed_area(ring) * sense > 0.0 else ring[::-1]
-
-
-def _signed_area(ring: Floats) -> float:
-    shifted = ring - ring[0]
-    return float(0.5 * _cross(shifted, np.roll(shifted, -1, axis=0)).sum())
-
-
-def _cross(a: Floats, b: Floats) -> Floats:
-    return np.asarray(a[..., 0] * b[..., 1] - a[..., 1] * b[..., 0])

@@ -7,7 +7,8 @@ import math
 import numpy as np
 import pytest
 
-from analysis_core.idealise.tributary import Region, shares
+from analysis_core.idealise.region import Region
+from analysis_core.idealise.tributary import shares
 
 RECTANGLE = [(0.0, 0.0), (6.0, 0.0), (6.0, 4.0), (0.0, 4.0)]
 
