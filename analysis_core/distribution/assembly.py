@@ -17,6 +17,7 @@ from analysis_core.distribution.verify import (
     joint_residual,
     own_rotations,
 )
+from analysis_core.errors import ModelError
 from analysis_core.model import FREE, RIGID, Line
 from analysis_core.results import LineSolution
 
@@ -29,8 +30,10 @@ SWAY = "moment distribution, translations released one by one"
 def solve_any(line: Line, cases: Sequence[str]) -> LineSolution:
     """Solve any line or frame, whatever its supports and translations.
 
-    Raises MechanismError and ModelError.
+    Raises MechanismError, and ModelError (also where the line states a fault).
     """
+    if line.fault:
+        raise ModelError(f"Line {line.mark} is not analysed: {line.fault}")
     refuse_idle_couples(line, cases)
     loads = gather(line, cases)
     balanced = balance(line, loads)

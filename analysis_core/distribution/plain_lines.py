@@ -73,7 +73,7 @@ class PlainLine:
 
 def read(line: Line, column: Mapping[str, int]) -> PlainLine | None:
     """Return what the batch needs of a line, or None where it is not plain."""
-    if line.kind != "line" or len(line.joints) != len(line.members) + 1:
+    if line.fault or line.kind != "line" or len(line.joints) != len(line.members) + 1:
         return None
     held = _supports(line)
     if held is None:
