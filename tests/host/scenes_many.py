@@ -28,7 +28,7 @@ def many_lines():
     session = Session(Path("many.ifc"), Path("many.yaml"))
     session.receive(outcome)
     desk.sessions[doc.Name] = session
-    found = {"start": start, "empty_frame": empty}
+    found = {"start": start, "empty_frame": empty, "yard": yardstick()}
     found["show"] = timed(lambda: desk._show_all(doc.Name))
     found["show_again"] = timed(lambda: desk._show_all(doc.Name))
     settle(1.0)
@@ -85,3 +85,39 @@ def frame_time(seconds=1.5):
         QtWidgets.QApplication.processEvents(QtCore.QEventLoop.ExcludeUserInputEvents)
         frames += 1
     return seconds / frames
+
+
+def edits():
+    """Take twenty decisions on a real model, each from the click to the drawn picture."""
+    import statistics
+
+    from scenes_model import copied, opened
+
+    desk = activate()
+    opened(desk, copied())
+    from freecad.spanledger.present import decisions
+
+    view = FreeCADGui.ActiveDocument.ActiveView
+    line = desk.solved.outcome.lines[0].line
+    where = decisions.where_is(line, 0)
+    times = []
+    for number in range(20):
+        condition = ("fixed", "pinned")[number % 2]
+        began = time.perf_counter()
+        desk.decide("edit", lambda text, c=condition: decisions.decide_support(text, where, c))
+        while desk.runs.busy:
+            QtWidgets.QApplication.processEvents()
+        view.redraw()
+        QtWidgets.QApplication.processEvents()
+        times.append(time.perf_counter() - began)
+    return {"median": statistics.median(times), "worst": max(times), "yard": yardstick()}
+
+
+def yardstick():
+    """Return how long a fixed piece of plain work takes here and now (best of three)."""
+    times = []
+    for _ in range(3):
+        began = time.perf_counter()
+        sum(number * number for number in range(1_000_000))
+        times.append(time.perf_counter() - began)
+    return min(times)

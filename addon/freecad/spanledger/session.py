@@ -79,8 +79,7 @@ class Session:
     @property
     def units(self) -> DisplayUnits:
         """Units in which the engineer reads."""
-        display = self.settings.display
-        return display_units(display.system, display.units)
+        return _units(self.text)
 
     def decide(self, title: str, text: str) -> None:
         """Take a changed job file, and write it.
@@ -187,6 +186,12 @@ def job_beside(path: Path) -> Path:
 @lru_cache(maxsize=8)
 def _parsed(text: str) -> Settings:
     return job.parse(text)
+
+
+@lru_cache(maxsize=8)
+def _units(text: str) -> DisplayUnits:
+    display = _parsed(text).display
+    return display_units(display.system, display.units)
 
 
 def _stamp(path: Path) -> tuple[int, int] | None:

@@ -173,7 +173,12 @@ def _paint(painter: Any, drawing: Drawing, palette: Palette, font: Any) -> None:
     for stroke in drawing.strokes:
         style = Qt.PenStyle.DashLine if stroke.dashed else Qt.PenStyle.SolidLine
         painter.setPen(QtGui.QPen(_colour(palette, stroke.role), stroke.width, style))
-        painter.drawPolyline(QtGui.QPolygonF([QtCore.QPointF(x, y) for x, y in stroke.points]))
+        path = QtGui.QPainterPath()
+        for run in (stroke.points, *stroke.more):
+            path.moveTo(*run[0])
+            for x, y in run[1:]:
+                path.lineTo(x, y)
+        painter.drawPath(path)
     for words in drawing.words:
         chosen = _small(font) if words.small else QtGui.QFont(font)
         chosen.setBold(words.bold)

@@ -11,12 +11,16 @@ Align = Literal["left", "centre", "right"]
 
 @dataclass(frozen=True, slots=True)
 class Stroke:
-    """A polyline; ``role`` names its colour in the palette."""
+    """A polyline; ``role`` names its colour in the palette.
+
+    ``more`` are further polylines in the same pen: many short ones are painted much faster at once.
+    """
 
     points: tuple[Place, ...]
     role: str
     width: float = 1.4
     dashed: bool = False
+    more: tuple[tuple[Place, ...], ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -244,8 +244,9 @@ def _spread(
     drawing.fills.append(Fill(box, "action", 0.16))
     drawing.strokes.append(Stroke((*box, box[0]), "action", 1.0))
     down = action.low + action.high >= 0.0
-    for x in np.linspace(left, right, max(int((right - left) / 34.0), 1) + 1):
-        _arrow_head(drawing, float(x), bottom if down else bottom - 5.0, down)
+    at = np.linspace(left, right, max(int((right - left) / 34.0), 1) + 1).tolist()
+    first, *more = (_arrow_head(x, bottom if down else bottom - 5.0, down) for x in at)
+    drawing.strokes.append(Stroke(first, "action", 1.2, more=tuple(more)))
 
 
 def _single(
@@ -267,13 +268,12 @@ def _single(
         drawing.strokes.append(Stroke(((left, bottom - room), (left, bottom)), "action", 1.6, True))
     else:
         drawing.strokes.append(Stroke(((left, bottom - room), (left, bottom)), "action", 1.8))
-    _arrow_head(drawing, left, bottom, action.low >= 0.0)
+    drawing.strokes.append(Stroke(_arrow_head(left, bottom, action.low >= 0.0), "action", 1.2))
 
 
-def _arrow_head(drawing: Drawing, x: float, y: float, down: bool) -> None:
+def _arrow_head(x: float, y: float, down: bool) -> tuple[Place, ...]:
     side = -5.0 if down else 5.0
-    points = ((x - 3.0, y + side), (x, y), (x + 3.0, y + side))
-    drawing.strokes.append(Stroke(points, "action", 1.2))
+    return (x - 3.0, y + side), (x, y), (x + 3.0, y + side)
 
 
 def _head(drawing: Drawing, before: Place, tip: Place) -> None:
