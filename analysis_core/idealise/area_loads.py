@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass, field
+from functools import lru_cache
 
 from analysis_core.building import Area, Building
 from analysis_core.idealise.area_receivers import Receiver, Receivers
@@ -159,7 +160,7 @@ def _shared(
     region = _region(area)
     if rule == "one-way" and direction is None:
         direction = _across_most(found)
-    parts = shares(region, [r.segment for r in found], rule, direction)
+    parts = _congruent(area, [r.segment for r in found], rule, direction)
     total = math.fsum(part.total for part in parts)
     if abs(total - region.area) > _ALLOWED * region.area:
         log.add(
@@ -171,6 +172,35 @@ def _shared(
             (area.global_id,),
         )
     return found, parts
+
+
+def _congruent(
+    area: Area, segments: list[tuple[Spot, Spot]], rule: Spread, direction: Spot | None
+) -> list[Share]:
+    """Return the shares of an area; bays alike, storey by storey, are worked out once.
+
+    Places count from the area's first corner, to a tenth of a millimetre, so that the far
+    coordinates of a map cost no digits either.
+    """
+    ox, oy = area.outline[0]
+
+    def near(spots: Iterable[Spot]) -> tuple[Spot, ...]:
+        return tuple((round(x - ox, 4), round(y - oy, 4)) for x, y in spots)
+
+    outline, voids = near(area.outline), tuple(near(void) for void in area.voids)
+    return list(_shares_of(outline, voids, tuple(near(s) for s in segments), rule, direction))
+
+
+@lru_cache(maxsize=4096)
+def _shares_of(
+    outline: tuple[Spot, ...],
+    voids: tuple[tuple[Spot, ...], ...],
+    segments: tuple[tuple[Spot, ...], ...],
+    rule: Spread,
+    direction: Spot | None,
+) -> tuple[Share, ...]:
+    lines = [(start, end) for start, end in segments]
+    return tuple(shares(Region(outline, voids), lines, rule, direction))
 
 
 def _across_most(found: Iterable[Receiver]) -> Spot:

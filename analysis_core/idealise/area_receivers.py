@@ -20,7 +20,7 @@ _BESIDE = 0.35
 # Less than this of a line under an area is a line that only touches its corner (m).
 _LEAST = 0.6
 _SAME_LINE = 0.15
-_LOOKS = 33
+_LOOKS = 17
 
 
 @dataclass(frozen=True, slots=True)
@@ -111,12 +111,32 @@ def _under(segment: tuple[Spot, Spot], outline: Sequence[Spot]) -> bool:
     size = math.hypot(bx - ax, by - ay)
     if size <= 0.0:
         return False
+    low, high = _within_box(segment, outline)
+    least = min(_LEAST, 0.8 * size)
+    if (high - low) * size < least:
+        return False
     inside = 0
     for step in range(_LOOKS):
-        share = (step + 0.5) / _LOOKS
+        share = low + (high - low) * (step + 0.5) / _LOOKS
         spot = (ax + share * (bx - ax), ay + share * (by - ay))
         inside += _near(spot, outline)
-    return inside * size / _LOOKS >= min(_LEAST, 0.8 * size)
+    return inside * (high - low) * size / _LOOKS >= least
+
+
+def _within_box(segment: tuple[Spot, Spot], outline: Sequence[Spot]) -> tuple[float, float]:
+    """Return the part of a segment, as fractions, within the box around an outline."""
+    low, high = 0.0, 1.0
+    for axis in (0, 1):
+        values = [spot[axis] for spot in outline]
+        near, far = min(values) - _BESIDE, max(values) + _BESIDE
+        start, run = segment[0][axis], segment[1][axis] - segment[0][axis]
+        if abs(run) < 1e-9:
+            if not near <= start <= far:
+                return 0.0, 0.0
+            continue
+        ends = sorted(((near - start) / run, (far - start) / run))
+        low, high = max(low, ends[0]), min(high, ends[1])
+    return low, max(low, high)
 
 
 def _near(spot: Spot, outline: Sequence[Spot]) -> bool:
