@@ -27,10 +27,20 @@ from analysis_core.model import (
 )
 from analysis_core.settings import Settings
 
+RECEIVES = "whose reactions it receives"
+
 
 def fingerprint(basis: Mapping[str, str]) -> str:
-    """Return the fingerprint of a basis: 32 hexadecimal digits."""
-    text = json.dumps(basis, sort_keys=True, ensure_ascii=True)
+    """Return the fingerprint of a basis: 32 hexadecimal digits.
+
+    Names of elements and marks of lines are left out: new GlobalIds or marks change no result.
+    """
+    nameless = ("section", "material", "received")
+    rows = [
+        [key.partition(" ")[0] if key.startswith(nameless) else key, text]
+        for key, text in basis.items()
+    ]
+    text = json.dumps(rows, ensure_ascii=True)
     return hashlib.sha256(text.encode("ascii")).hexdigest()[:32]
 
 
@@ -83,7 +93,7 @@ def differences(
         subject, _, which = key.partition(" ")
         what = _subject(subject, which, names)
         if subject == "received" and old and new:
-            sentences.append(f"{which}, whose reactions it receives, changed")
+            sentences.append(f"{which}, {RECEIVES}, changed")
         elif subject in ("geometry", "section", "material", "support", "actions", "rules"):
             sentences.append(_change(what, old, new))
         else:

@@ -20,9 +20,10 @@ from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
+from analysis_core.kept_marks import with_kept_marks
 from analysis_core.model import LineModel
 from analysis_core.results import LineResult, Outcome
-from analysis_core.revision import Reconciliation
+from analysis_core.revision import Reconciliation, marks_before
 from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
 from analysis_core.solving import Memory, solve_lines
@@ -164,11 +165,14 @@ def reconcile(
     """
     settings = settings or Settings()
     memory = Memory()
-    outcomes = [
-        solve(survey(path, settings, progress=progress), settings, progress=progress, memory=memory)
-        for path in (before, after)
-    ]
-    return compare(outcomes[0], outcomes[1], solved_again=tuple(memory.again))
+    first = solve(
+        survey(before, settings, progress=progress), settings, progress=progress, memory=memory
+    )
+    found = survey(after, settings, progress=progress)
+    model = with_kept_marks(found.model, marks_before(first, found.model.lines))
+    found = replace(found, model=model, findings=model.findings)
+    second = solve(found, settings, progress=progress, memory=memory)
+    return compare(first, second, solved_again=tuple(memory.again))
 
 
 def post(

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from decimal import Decimal
 
 from analysis_core.distribution.record import DistributionRecord, End, Table
 from analysis_core.model import Line
@@ -76,7 +77,7 @@ def _table(
         if carried:
             texts = {column: moment(value) for column, value in carried.items()}
             rows.append(RecordRow("carried", "carried over", _cells(table, texts)))
-    rows.append(RecordRow("sum", "sum", tuple(moment(v) for v in table.sums)))
+    rows.append(RecordRow("sum", "sum", _sums(rows, len(table.ends))))
     if number == 0 and len(record.tables) == 1:
         exact = _exact(record, table)
         if exact is not None:
@@ -88,6 +89,15 @@ def _table(
         rows=tuple(rows),
         notes=_notes(record, table, units, number),
     )
+
+
+def _sums(rows: Sequence[RecordRow], columns: int) -> tuple[str, ...]:
+    """The sums of the printed numbers, so that a checker who adds them up finds them."""
+    first = next(i for i, row in reversed([*enumerate(rows)]) if row.kind in ("held", "known"))
+    sums = [Decimal(0)] * columns
+    for row in rows[first:]:
+        sums = [s + Decimal(cell or 0) for s, cell in zip(sums, row.cells, strict=True)]
+    return tuple(str(abs(s) if s == 0 else s) for s in sums)
 
 
 def _carry(end: End) -> str:

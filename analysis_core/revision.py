@@ -10,14 +10,16 @@ from __future__ import annotations
 import math
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
-from analysis_core.fingerprints import differences
+from analysis_core.fingerprints import RECEIVES, differences
 from analysis_core.model import Line, Point
 from analysis_core.results import LineResult, Outcome
 
 SAME_PLACE = 0.05
 """Ends of an element closer than this (m) are at the same place."""
+SAME_EFFECT = 1e-9
+"""Effects that differ by less than this part of themselves are the same."""
 MOVED = 1e-4
 """A line whose joints moved by more than this (m) has moved."""
 
@@ -76,12 +78,19 @@ class Reconciliation:
 
 def reconcile(before: Outcome, after: Outcome, *, solved_again: Sequence[str]) -> Reconciliation:
     """Compare two outcomes of successive revisions."""
-    renamed = _renamed(before, after)
+    renamed = _matched_by_place(before.model.lines, after.model.lines)
     changes = [
         _change(before, after, old, new, renamed) for old, new in _groups(before, after, renamed)
     ]
     changes.sort(key=lambda c: (c.state == "unchanged", -c.largest, c.after or c.before))
     return Reconciliation(before, after, tuple(changes), renamed, tuple(solved_again))
+
+
+def marks_before(before: Outcome, after: Iterable[Line]) -> dict[str, str]:
+    """Return the mark that each element of ``after`` had in ``before``, for keeping marks."""
+    found = {e: line.mark for line in before.model.lines for e in _elements(line)}
+    renamed = _matched_by_place(before.model.lines, after)
+    return {**found, **{new: found[old] for old, new in renamed.items() if old in found}}
 
 
 def governing(results: Iterable[LineResult]) -> Governing | None:
@@ -112,7 +121,7 @@ def _relative(before: float, after: float) -> float:
     return abs(after - before) / scale if scale > 1e-9 else 0.0
 
 
-def _renamed(before: Outcome, after: Outcome) -> dict[str, str]:
+def _matched_by_place(before: Iterable[Line], after: Iterable[Line]) -> dict[str, str]:
     """Match elements that have no namesake by the places of their ends."""
     old, new = _extents(before), _extents(after)
     left = {key: ends for key, ends in old.items() if key not in new}
@@ -131,10 +140,10 @@ def _renamed(before: Outcome, after: Outcome) -> dict[str, str]:
     return found
 
 
-def _extents(outcome: Outcome) -> dict[str, tuple[Point, Point]]:
+def _extents(lines: Iterable[Line]) -> dict[str, tuple[Point, Point]]:
     """First and last world point of each element."""
     out: dict[str, tuple[Point, Point]] = {}
-    for line in outcome.model.lines:
+    for line in lines:
         for member in line.members:
             if not member.element:
                 continue
@@ -237,7 +246,7 @@ def _change(
         if was[0].status != now[0].status:
             reasons.append(f"{was[0].status} before, {now[0].status} now")
         state = "changed" if reasons else "unchanged"
-    return LineChange(
+    change = LineChange(
         state=state,
         before=old,
         after=new,
@@ -246,6 +255,10 @@ def _change(
         effects_before=governing(was),
         effects_after=governing(now),
     )
+    if reasons and all(RECEIVES in reason for reason in reasons) and change.largest < SAME_EFFECT:
+        # What bears on the line changed, but not what it hands down.
+        return replace(change, state="unchanged", reasons=())
+    return change
 
 
 def _state(before: int, after: int) -> str:

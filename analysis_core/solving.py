@@ -329,8 +329,10 @@ def _results(
                 s.whole.joint_residual, s.whole.continuity_residual, found.difference
             ),
         )
+    for line in model.lines:
+        results.setdefault(line.mark, LineResult(line, "not analysed"))
     _add_fingerprints(model, rules, settings, solver, results)
-    return tuple(results.get(line.mark) or LineResult(line, "not analysed") for line in model.lines)
+    return tuple(results[line.mark] for line in model.lines)
 
 
 def _states(
@@ -412,10 +414,9 @@ def _add_fingerprints(
 
     for level in levels([line.mark for line in model.lines], model.transfers):
         for group in level:
-            solved = [mark for mark in group if mark in results]
             if len(group) > 1:
-                prints.update({mark: fingerprint(of(mark)) for mark in solved})
-            for mark in solved:
+                prints.update({mark: fingerprint(of(mark)) for mark in group})
+            for mark in group:
                 found = of(mark)
                 results[mark] = replace(results[mark], basis=found, fingerprint=fingerprint(found))
-            prints.update({mark: results[mark].fingerprint for mark in solved})
+            prints.update({mark: results[mark].fingerprint for mark in group})
