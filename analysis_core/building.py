@@ -93,6 +93,8 @@ class AxisMember:
     end_stiffness: tuple[float | None, float | None] = (None, None)
     """Rotational stiffness of the joints at its start and end, where an authoring tool states it
     beyond doubt (physical route): 0 released, infinite rigid, else N·m/rad; None: not stated."""
+    modelled_start: Point | None = None
+    modelled_end: Point | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
 from contextlib import suppress
 from typing import Any
 
@@ -39,12 +38,12 @@ class Elements:
         self._choices: dict[int, Choice] = {}
         self._storeys: dict[int, str] = {}
 
-    def of_class(self, ifc_class: str) -> Iterable[Any]:
-        """Return the entities of a class and its subclasses; none where the schema lacks it."""
+    def of_class(self, ifc_class: str) -> tuple[Any, ...] | None:
+        """Return the entities of a class and its subclasses, None where the schema lacks it."""
         try:
             return tuple(self.file.by_type(ifc_class))
         except RuntimeError:
-            return ()
+            return None
 
     def storeys(self) -> tuple[tuple[str, float], ...]:
         """Return name and level of each storey, lowest first."""
@@ -89,6 +88,10 @@ class Elements:
         if choice.note:
             self._notes.group("note", "material-choice", f": {choice.note}", "", entity)
         return material
+
+    def unnoted_material(self, choice: Choice) -> Material | None:
+        """Return a material without noting anything: its name is all that is wanted."""
+        return self._materials.read(choice.material)[0] if choice.material is not None else None
 
     def frame(self, entity: Any) -> Frame:
         """Return the world frame of an element.  Raises UnreadableShapeError."""

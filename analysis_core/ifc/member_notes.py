@@ -1,4 +1,4 @@
-"""What is worth telling about members as they were read: offsets, oblique bending, duplicates."""
+"""What is worth telling about members as they were read: offsets, profiles, duplicates."""
 
 from __future__ import annotations
 
@@ -14,7 +14,6 @@ from analysis_core.ifc.sticks import Stick
 from analysis_core.model import Section
 
 _OFFSET_WORTH_TELLING = 0.01
-_OBLIQUE = 0.1  # of sqrt(I_y I_z): one per cent of the stiffness
 _PROFILES_AGREE = 0.02
 _SAME_PLACE = 0.02
 _CELL = 1.0
@@ -42,22 +41,10 @@ def note_section(
     stated: Profile | None,
     notes: Notes,
 ) -> None:
-    """Note a missing section, one that bends sideways, and profiles that contradict the body."""
+    """Note a missing section, and an associated profile that contradicts the body."""
     if section is None:
         notes.no_section(entity)
         return
-    both = math.sqrt(section.inertia * section.inertia_lateral)
-    if abs(section.inertia_product) > _OBLIQUE * both > 0.0:
-        free = 1.0 - (section.inertia_product / both) ** 2
-        notes.group(
-            "warning",
-            "oblique-bending",
-            f"with section '{section.name}', which bends sideways too; analysed as held sideways "
-            f"(by floor or roof). Free to move sideways it would have "
-            f"{100.0 * free:.0f} % of the inertia that was used",
-            "See that something holds them sideways.",
-            entity,
-        )
     if drawn is not None and stated is not None:
         pairs = (
             (drawn.moments.area, stated.moments.area),

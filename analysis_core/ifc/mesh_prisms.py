@@ -87,6 +87,20 @@ def mesh_of_prism(prism: Prism) -> Mesh:
     return Mesh(both, (tuple(bottom), top, *sides), prism.profile.ifc_class)
 
 
+def section_loops(mesh: Mesh, axis: int) -> Loops:
+    """Return the outline of a mesh cut half-way along a world axis (0, 1 or 2).
+
+    Coordinates of the loops are those of the other two axes, in order; empty where the cut does
+    not close.
+    """
+    points, faces = _merged(mesh)
+    order = [axis, *(i for i in range(3) if i != axis)]
+    turned = points[:, order]
+    low, high = float(turned[:, 0].min()), float(turned[:, 0].max())
+    loops = _chained(_cut(turned, faces, low + _HALF_WAY * (high - low)))
+    return _nested(loops) if loops else ()
+
+
 def hull(points: Floats) -> Floats:
     """Return the convex hull (n, 2) of points in the plane, anticlockwise (monotone chain)."""
     ordered = sorted({(float(x), float(y)) for x, y in points})

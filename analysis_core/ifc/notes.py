@@ -57,6 +57,17 @@ class Notes:
             [],
         ).append((entity[0] or f"#{entity.id()}", entity[2] or ""))
 
+    def unknown_class(self, ifc_class: str, schema: str) -> None:
+        """Note a class that was asked for and that the schema does not have."""
+        self.add(
+            Finding(
+                "warning",
+                "unknown-class",
+                f"{schema} has no class {ifc_class}, which is to be read as beams; nothing was "
+                f"read for it. Correct the job file (analysis, include).",
+            )
+        )
+
     def left_out(self, reason: str, entity: Any) -> None:
         """Note an element that is no beam."""
         self.group(

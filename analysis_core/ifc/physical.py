@@ -9,10 +9,12 @@ from contextlib import contextmanager
 from dataclasses import replace
 from typing import Any
 
-from analysis_core.building import AxisMember, Building, Carrier
+from analysis_core.building import Area, AxisMember, Building, Carrier
 from analysis_core.ifc import roles
+from analysis_core.ifc.areas import AreaReader
 from analysis_core.ifc.bodies import Shape
 from analysis_core.ifc.elements import Elements
+from analysis_core.ifc.end_releases import NOT_STATED, end_releases
 from analysis_core.ifc.extents import Extent, ExtentReader
 from analysis_core.ifc.frames import Frame, Vector
 from analysis_core.ifc.material_choice import Choice
@@ -37,8 +39,15 @@ OTHER_CARRIER_CLASSES = (
     "IfcFooting",
     "IfcCaissonFoundation",
     "IfcBearing",
-    "IfcSlab",
 )
+
+# Classes asked for by default that some schemas do not have.
+_KNOWN_ELSEWHERE = {
+    "IfcBeamStandardCase",
+    "IfcMemberStandardCase",
+    "IfcCaissonFoundation",
+    "IfcBearing",
+}
 
 
 def read_physical(source: Source, settings: Settings) -> Building:
@@ -76,6 +85,9 @@ class _Reader:
         self._named_sections: dict[tuple[int, str], tuple[Section, Section]] = {}
         self._steepest = math.sin(settings.tolerances.beam_slope)
         self._ids: set[str] = set()
+        self._ends = end_releases(source.file)
+        self._area_reader = AreaReader(self._elements, self._extents, self._notes)
+        self._areas: list[Area] = []
 
     def building(self) -> Building:
         storeys = self._elements.storeys()
@@ -86,6 +98,9 @@ class _Reader:
             self._read_all(ifc_class, self._read_column, done)
         for ifc_class in OTHER_CARRIER_CLASSES:
             self._read_all(ifc_class, self._read_carrier, done)
+        self._read_all("IfcSlab", self._read_slab, done)
+        if self._settings.area_actions:
+            self._read_all("IfcSpace", self._read_space, done)
         self._count("taken as beams", len(self._members))
         self._note_relations()
         note_duplicates(self._members, self._notes)
@@ -96,6 +111,7 @@ class _Reader:
             members=tuple(self._members),
             carriers=tuple(self._carriers),
             findings=(*self._notes.findings(), *self._source.units.findings()),
+            areas=tuple(self._areas),
             storeys=storeys,
             counts=self._counts,
         )
@@ -104,7 +120,12 @@ class _Reader:
         self._counts[what] = self._counts.get(what, 0) + number
 
     def _read_all(self, ifc_class: str, reader: Any, done: set[int]) -> None:
-        for entity in self._elements.of_class(ifc_class):
+        found = self._elements.of_class(ifc_class)
+        if found is None:
+            if ifc_class not in _KNOWN_ELSEWHERE:
+                self._notes.unknown_class(ifc_class, self._source.schema)
+            return
+        for entity in found:
             key = entity.id()
             if key in done:
                 continue
@@ -167,9 +188,11 @@ class _Reader:
                 material=elements.material(entity, choice),
                 storey=elements.storey(entity),
                 type_name=elements.type_name(entity),
-                carries_moment=roles.carries_moment(entity),
                 axis_offset=stick.offset,
                 note="; ".join(stick.remarks),
+                end_stiffness=self._ends.get(entity.id(), NOT_STATED),
+                modelled_start=stick.body_start,
+                modelled_end=stick.body_end,
             )
         )
 
@@ -239,6 +262,27 @@ class _Reader:
         shape = self._elements.shape(entity)
         self._add_carrier(entity, shape, frame, self._elements.choice(entity), entity.is_a())
 
+    def _read_slab(self, entity: Any) -> None:
+        frame = self._elements.frame(entity)
+        shape = self._elements.shape(entity)
+        extent = self._add_carrier(
+            entity, shape, frame, self._elements.choice(entity), entity.is_a()
+        )
+        self._add_area(entity, shape, frame, extent)
+
+    def _read_space(self, entity: Any) -> None:
+        frame = self._elements.frame(entity)
+        shape = self._elements.shape(entity)
+        extent = self._extents.extent(shape.items, frame)
+        if extent is None:
+            raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
+        self._add_area(entity, shape, frame, extent)
+
+    def _add_area(self, entity: Any, shape: Shape, frame: Frame, extent: Extent) -> None:
+        area = self._area_reader.area(entity, shape.items, frame, extent)
+        if area is not None:
+            self._areas.append(area)
+
     def _add_column(
         self, entity: Any, shape: Shape, frame: Frame, stick: Stick, choice: Choice
     ) -> None:
@@ -254,11 +298,12 @@ class _Reader:
 
     def _add_carrier(
         self, entity: Any, shape: Shape, frame: Frame, choice: Choice, ifc_class: str
-    ) -> None:
+    ) -> Extent:
         extent = self._extents.extent(shape.items, frame)
         if extent is None:
             raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
         self._append(entity, ifc_class, extent, choice)
+        return extent
 
     def _append(
         self,

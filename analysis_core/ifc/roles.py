@@ -9,13 +9,18 @@ from typing import Any, NamedTuple
 from analysis_core.model import Section
 from analysis_core.settings import BeamRules
 
-_NO_MOMENT = {"BRACE", "STRUT", "TIEBAR", "STAY_CABLE", "SUSPENSION_CABLE", "SUSPENDER",
-              "STRUCTURALCABLE"}  # fmt: skip
 _NOT_BEAMS = {
     "MULLION": "a mullion",
     "PLATE": "a plate by its predefined type",
     "STIFFENING_RIB": "a stiffening rib",
     "CORNICE": "a cornice",
+    "BRACE": "a brace",
+    "STRUT": "a strut",
+    "TIEBAR": "a tie",
+    "STAY_CABLE": "a cable",
+    "SUSPENSION_CABLE": "a cable",
+    "SUSPENDER": "a hanger",
+    "STRUCTURALCABLE": "a cable",
 }
 _HOSTS = {
     "IfcCurtainWall": "a curtain wall",
@@ -98,8 +103,3 @@ def predefined_type(entity: Any) -> str:
     """Return the PredefinedType of an element, "" where its schema or the file has none."""
     value = getattr(entity, "PredefinedType", None)
     return value if isinstance(value, str) and value != "NOTDEFINED" else ""
-
-
-def carries_moment(entity: Any) -> bool:
-    """Whether an element bends by its predefined type: braces, struts and cables do not."""
-    return predefined_type(entity) not in _NO_MOMENT

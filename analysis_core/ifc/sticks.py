@@ -83,6 +83,8 @@ def stick_of(shape: Shape) -> Stick:
     if not shape.items:
         return _stick_of_axis(axis, shape)
     main, remarks = _main_prism(shape.items, axis)
+    if shape.box_only:
+        remarks.append("only its bounding box is drawn; the section is that of the box")
     start, end = _body_ends(main)
     stick = Stick(
         start,

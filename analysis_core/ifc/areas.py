@@ -1,0 +1,172 @@
+"""Slabs and spaces as areas in plan: true outlines with voids, not convex ones."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import Any, NamedTuple
+
+import numpy as np
+
+from analysis_core.building import Area
+from analysis_core.ifc import frames, outline
+from analysis_core.ifc.bodies import Item, Mesh, Prism
+from analysis_core.ifc.elements import Elements
+from analysis_core.ifc.extents import Extent, ExtentReader
+from analysis_core.ifc.frames import Frame
+from analysis_core.ifc.mesh_prisms import hull, section_loops
+from analysis_core.ifc.notes import Notes
+from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.unreadable import READ_ERRORS
+
+Ring = tuple[tuple[float, float], ...]
+_CHORDS = 32
+_THROUGH = 0.02
+_SAME_AREA = 0.01
+
+
+class _Plan(NamedTuple):
+    outline: Floats
+    voids: tuple[Floats, ...]
+
+
+class AreaReader:
+    """Reads areas; the openings of the file are related to their hosts once."""
+
+    def __init__(self, elements: Elements, extents: ExtentReader, notes: Notes) -> None:
+        self._elements = elements
+        self._extents = extents
+        self._notes = notes
+        self._openings: dict[int, list[Any]] = {}
+        for relation in elements.of_class("IfcRelVoidsElement") or ():
+            host, opening = relation[4], relation[5]
+            if host is not None and opening is not None:
+                self._openings.setdefault(host.id(), []).append(opening)
+
+    def area(self, entity: Any, items: Sequence[Item], frame: Frame, extent: Extent) -> Area | None:
+        """Return a slab or space as an area, None where it has no plan outline."""
+        plans = [plan for item in items if (plan := _plan(item, frame)) is not None]
+        if not plans:
+            return None
+        plans.sort(key=lambda plan: -abs(_area(plan.outline)))
+        plan = plans[0]
+        whole = abs(_area(hull(np.array(extent.corners))))
+        if len(plans) > 1 and abs(_area(plan.outline)) < (1.0 - _SAME_AREA) * whole:
+            plan = _Plan(np.array(extent.corners), ())
+            self._notes.group(
+                "note",
+                "area-outline",
+                ": its body has several parts; area loads take their convex outline",
+                "Draw the slab as one body where that is too much.",
+                entity,
+            )
+        voids = [*plan.voids, *self._opening_rings(entity, plan, extent)]
+        elements = self._elements
+        space = entity.is_a("IfcSpace")
+        return Area(
+            global_id=entity[0],
+            name=entity[2] or "",
+            ifc_class=entity.is_a(),
+            bottom=extent.bottom,
+            top=extent.bottom if space else extent.top,
+            outline=_ring(plan.outline),
+            voids=tuple(_ring(void) for void in voids),
+            storey=elements.storey(entity),
+            type_name="" if space else elements.type_name(entity),
+            material=None if space else elements.unnoted_material(elements.choice(entity)),
+        )
+
+    def _opening_rings(self, entity: Any, plan: _Plan, extent: Extent) -> list[Floats]:
+        rings: list[Floats] = []
+        for opening in self._openings.get(entity.id(), ()):
+            try:
+                frame = self._elements.frame(opening)
+                items = self._elements.shape(opening).items
+            except READ_ERRORS:
+                continue
+            reach = self._extents.extent(items, frame)
+            if reach is None or not _goes_through(reach, extent):
+                continue
+            for item in items:
+                hole = _plan(item, frame)
+                if hole is None:
+                    continue
+                if all(_holds(plan.outline, x, y) for x, y in hole.outline.tolist()):
+                    rings.append(hole.outline)
+                else:
+                    self._notes.group(
+                        "note",
+                        "opening-at-edge",
+                        "with an opening that cuts the edge; area loads take them without it",
+                        "Draw the slab's outline as it is where that matters.",
+                        entity,
+                    )
+        return rings
+
+
+def _goes_through(hole: Extent, slab: Extent) -> bool:
+    return hole.top > slab.top - _THROUGH and hole.bottom < slab.bottom + _THROUGH
+
+
+def _plan(item: Item, frame: Frame) -> _Plan | None:
+    """The outline of a body seen from above."""
+    if isinstance(item, Prism):
+        return _prism_plan(item, frame)
+    if isinstance(item, Mesh):
+        return _mesh_plan(item, frame)
+    return None
+
+
+def _prism_plan(prism: Prism, frame: Frame) -> _Plan | None:
+    """A profile carried upwards is seen as itself; one carried sideways as its strip."""
+    whole = frames.compose(frame, prism.frame)
+    vx, vy, vz = frames.direction(frame, *prism.vector)
+    if math.hypot(vx, vy) > 1e-6 * abs(vz) and abs(vz) < 0.2 * math.hypot(vx, vy):
+        corners = np.vstack(
+            [
+                frames.images(whole, _flat(rows)) + shift
+                for rows in prism.profile.drawn.loops
+                for shift in (np.zeros(3), np.array([vx, vy, vz]))
+            ]
+        )
+        return _Plan(hull(corners[:, :2]), ())
+    rings = [frames.images(whole, _flat(rows))[:, :2] for rows in prism.profile.drawn.loops]
+    if abs(_area(rings[0])) < 1e-6:
+        return None
+    return _Plan(rings[0], tuple(rings[1:]))
+
+
+def _flat(rows: Floats) -> Floats:
+    flat = outline.flattened(rows, _CHORDS)[:, :2]
+    return np.column_stack([flat, np.zeros(len(flat))])
+
+
+def _mesh_plan(mesh: Mesh, frame: Frame) -> _Plan | None:
+    placed = mesh.moved(frame)
+    rings = [rows[:, :2] for rows in section_loops(placed, axis=2)]
+    corners = hull(placed.points[:, :2])
+    if not rings or abs(_area(rings[0])) < 0.6 * abs(_area(corners)):
+        # Sloping slabs are not cut whole by a level plane.
+        rings = [corners]
+    if len(rings[0]) < 3:
+        return None
+    return _Plan(rings[0], tuple(ring for ring in rings[1:] if _area(ring) < 0.0))
+
+
+def _area(ring: Floats) -> float:
+    x, y = ring[:, 0] - ring[0, 0], ring[:, 1] - ring[0, 1]
+    return float(0.5 * (x * np.roll(y, -1) - np.roll(x, -1) * y).sum())
+
+
+def _ring(points: Floats) -> Ring:
+    return tuple((x, y) for x, y in points.tolist())
+
+
+def _holds(ring: Floats, x: float, y: float) -> bool:
+    inside = False
+    x0, y0 = ring[-1].tolist()
+    for x1, y1 in ring.tolist():
+        if (y0 > y) != (y1 > y) and x < x0 + (x1 - x0) * (y - y0) / (y1 - y0):
+            inside = not inside
+        x0, y0 = x1, y1
+    return inside
