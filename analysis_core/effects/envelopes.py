@@ -209,12 +209,22 @@ def _reactions(
     x = np.repeat([joints[j][0].x for j in chosen], 3)
     parts = [joints[j][1] for j in chosen for _ in range(3)]
     high, low = both(flat[None], table)
+    acting = np.flatnonzero(flat.any(axis=0))
+    none = Extreme(0.0)
     extremes = []
     for rows, pick in ((high[0], np.argmax), (low[0], np.argmin)):
         row = pick(rows, axis=0)
         found = np.take_along_axis(rows, row[None], 0)[0]
-        peaks = Peaks(found, x, row, flat)
-        extremes.append(named_extremes(peaks, table, parts, largest=pick is np.argmax))
+        peaks = Peaks(found[acting], x[acting], row[acting], flat[:, acting])
+        own = [parts[i] for i in acting.tolist()]
+        named = [none] * len(parts)
+        for i, extreme in zip(
+            acting.tolist(),
+            named_extremes(peaks, table, own, largest=pick is np.argmax),
+            strict=True,
+        ):
+            named[i] = extreme
+        extremes.append(named)
     top, bottom = extremes
     made = iter(
         ReactionEnvelope(

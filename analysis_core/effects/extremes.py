@@ -18,12 +18,20 @@ import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.factors import FactorTable
-from analysis_core.effects.polynomials import bernstein, evaluate, largest_between, restricted
+from analysis_core.effects.polynomials import (
+    bernstein,
+    derivative,
+    evaluate,
+    largest_between,
+    restricted,
+)
 from analysis_core.effects.survey import EQUAL, Stretches
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 
+_POLISH = 4  # steps of Newton's from six digits to all
+_NEAR = 1e-4
 _HALVINGS = 60  # the margin falls by four with each: far more than ever needed
 
 
@@ -49,15 +57,35 @@ def largest(coefficients: Floats, cuts: Floats, table: FactorTable, stretches: S
     by_part = np.ascontiguousarray(coefficients.transpose(1, 3, 0, 2))  # (K, B, P, C)
     find = _fixed if table.fixed else _varied
     found = find(by_part, table, stretches)
-    row, segment, t, value = _first(found, coefficients.shape[3])
+    row, segment, t = _first(found, coefficients.shape[3])
     members = np.arange(coefficients.shape[3])
     chosen = by_part[segment, members].swapaxes(0, 1)  # (P, B, C)
+    contributions = evaluate(chosen, t[:, None])
+    factors = np.where(contributions > 0.0, table.high[row], table.low[row])
+    value, t = _settled(_weighted(chosen, factors), t)
     return Peaks(
         value=value,
         x=cuts[segment, members] + t * np.diff(cuts, axis=0)[segment, members],
         row=row,
-        contributions=evaluate(chosen, t[:, None]).T,
+        contributions=contributions.T,
     )
+
+
+def _settled(polynomials: Floats, t: Floats) -> tuple[Floats, Floats]:
+    """Value and place by a way that does not depend on how the place was found.
+
+    Members are treated together or alone as it suits; both must give the same to the last digit.
+    """
+    slope = derivative(polynomials)
+    bend = derivative(slope)
+    t = np.round(t, 6)
+    for _ in range(_POLISH):
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
+            step = evaluate(slope, t) / evaluate(bend, t)
+        near = (t > 0.0) & (t < 1.0) & (np.abs(step) < _NEAR)
+        t = np.where(near, np.clip(t - step, 0.0, 1.0), t)
+    t = np.round(t, 12)
+    return evaluate(polynomials, t), t
 
 
 @dataclass(slots=True, eq=False)
@@ -165,17 +193,17 @@ def _weighted(chosen: Floats, factors: Floats) -> Floats:
     return np.asarray(np.sum(chosen * factors, axis=2))
 
 
-def _first(found: _Found, size: int) -> tuple[Integers, Integers, Floats, Floats]:
+def _first(found: _Found, size: int) -> tuple[Integers, Integers, Floats]:
     """Of each member's candidates the largest; of equal ones the first row, leftmost."""
     top = np.full(size, -np.inf)
     np.maximum.at(top, found.member, found.value)
     scale = np.zeros(size)
     np.maximum.at(scale, found.member, np.abs(found.value))
     good = found.value >= (top - EQUAL * scale)[found.member]
-    member, row, segment, t, value = (
-        getattr(found, name)[good] for name in ("member", "row", "segment", "t", "value")
+    member, row, segment, t = (
+        getattr(found, name)[good] for name in ("member", "row", "segment", "t")
     )
     order = np.lexsort((t, segment, row, member))
     _, first = np.unique(member[order], return_index=True)
     pick = order[first]
-    return row[pick], segment[pick], t[pick], value[pick]
+    return row[pick], segment[pick], t[pick]

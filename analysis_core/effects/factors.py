@@ -59,7 +59,7 @@ class FactorTable:
         named = zip(self.names, self.labels, strict=True)
         plain = [f"{name} ({label})" if label else name for name, label in named]
         if self.fixed:
-            return [plain[row] for row in rows]
+            return [plain[row] for row in rows.tolist()]
         low, high, stated = (t[rows].T for t in (self.low, self.high, self.stated))
         upward = contributions > 0.0 if largest else contributions < 0.0
         weight = np.abs(contributions) * np.maximum(np.abs(low), np.abs(high))

@@ -25,7 +25,7 @@ from analysis_core.results import LineSolution
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 
-_TOGETHER = 48  # fewer rows than this share one block, whatever their shapes
+_TOGETHER = 48  # fewer rows than this share blocks, whatever their degrees
 _SAME_PLACE = 1e-9  # of the member's length
 _NUMBERS = 400_000  # of doubles in the largest array of a block, so that it stays in the cache
 
@@ -95,10 +95,13 @@ def end_movements(lines: Sequence[Line], solutions: Sequence[LineSolution]) -> F
 
 
 def _groups(rows: Sequence[segments.Row], count: int) -> Iterator[list[int]]:
-    """Numbers of rows that go together: of one shape where there are many, else all."""
+    """Numbers of rows that go together: of one shape, or of few at least as many segments.
+
+    Coefficients of 0 change no bit of a result, segments of no length might.
+    """
     together: dict[tuple[int, ...], list[int]] = {}
     for i, row in enumerate(rows):
-        key = row.shape if len(rows) >= _TOGETHER else ()
+        key = row.shape if len(rows) >= _TOGETHER else row.shape[:1]
         together.setdefault(key, []).append(i)
     for members in together.values():
         largest = max(rows[i].shape[0] * (rows[i].shape[1] + rows[i].shape[2] + 3) for i in members)

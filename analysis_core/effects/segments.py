@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -29,17 +30,22 @@ Floats = NDArray[np.float64]
 _SAME_PLACE = 1e-9  # of the member's length
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
-    """One member of one line with its actions and cuts, before it joins others in a block."""
+class Row(NamedTuple):
+    """One member of one line with its actions and cuts, before it joins others in a block.
+
+    ``shape``: number of segments, and of coefficients: of the load, of 1/EI and of 1/GA.
+    ``bending`` is 1/EI where that is all there is to its flexibility, else ``parts`` hold it.
+    ``plain``: no action but uniform ones over the whole member.
+    """
 
     line: int
     member: Member
-    actions: tuple[MemberAction, ...]
+    actions: Sequence[MemberAction]
     cuts: tuple[float, ...]
-    parts: tuple[Part, ...]
     shape: tuple[int, int, int, int]
-    """Number of segments, and of coefficients: of the load, of 1/EI and of 1/GA."""
+    bending: float
+    parts: tuple[Part, ...]
+    plain: bool
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -66,23 +72,42 @@ def rows(lines: Sequence[Line]) -> list[Row]:
     out = []
     for index, line in enumerate(lines):
         by_member: list[list[MemberAction]] = [[] for _ in line.members]
-        degrees = [1] * len(line.members)
         for action in line.actions:
-            if isinstance(action, DistributedForce):
+            if isinstance(action, DistributedForce | PointForce | PointMoment | ImposedCurvature):
                 by_member[action.member].append(action)
-                degrees[action.member] = max(degrees[action.member], len(action.transverse))
-            elif isinstance(action, PointForce | PointMoment | ImposedCurvature):
-                by_member[action.member].append(action)
-        for member, actions, degree in zip(line.members, by_member, degrees, strict=True):
-            own = parts(member)
-            cuts = _cuts(member.length, own, actions)
-            bend, shear = (
-                max(len(values) for values in each)
-                for each in ([p.bending for p in own], [p.shear for p in own])
-            )
-            shape = len(cuts) - 1, degree, bend, shear
-            out.append(Row(index, member, tuple(actions), cuts, own, shape))
+        for member, actions in zip(line.members, by_member, strict=True):
+            out.append(_row(index, member, actions))
     return out
+
+
+def _row(index: int, member: Member, actions: Sequence[MemberAction]) -> Row:
+    piece = member.pieces[0]
+    if len(member.pieces) == 1 and len(piece.flexural) == 1 and piece.shear is None:
+        own: tuple[Part, ...] = ()
+        length = piece.length
+        bending = piece.flexural[0] ** -piece.power
+        bend, shear = 1, 0
+    else:
+        own = parts(member)
+        length, bending = member.length, 0.0
+        bend = max(len(part.bending) for part in own)
+        shear = max(len(part.shear) for part in own)
+    slack = _SAME_PLACE * length
+    if (
+        all(
+            isinstance(a, DistributedForce)
+            and len(a.transverse) == 1
+            and a.start <= slack
+            and a.end >= length - slack
+            for a in actions
+        )
+        and len(own) < 2
+    ):
+        return Row(index, member, actions, (0.0, length), (1, 1, bend, shear), bending, own, True)
+    cuts = _cuts(length, own, actions)
+    degree = max((len(a.transverse) for a in actions if isinstance(a, DistributedForce)), default=1)
+    shape = len(cuts) - 1, max(degree, 1), bend, shear
+    return Row(index, member, actions, cuts, shape, bending, own, False)
 
 
 def block(chosen: Sequence[Row], columns: Sequence[dict[str, int]], count: int) -> Block:
@@ -107,8 +132,18 @@ def block(chosen: Sequence[Row], columns: Sequence[dict[str, int]], count: int) 
         own = len(row.cuts) - 1
         out.cuts[: own + 1, b] = row.cuts
         out.cuts[own + 1 :, b] = row.cuts[-1]
-        _flexibility(out, b, row)
+        if row.bending:
+            out.bending[0, :, b] = row.bending
+        else:
+            _flexibility(out, b, row)
         column = columns[row.line]
+        if row.plain:
+            uniform = out.load[0, 0, :, b]
+            for action in row.actions:
+                c = column.get(action.case)
+                if c is not None:
+                    uniform[c] += action.transverse[0]  # type: ignore[union-attr,index]  # plain rows hold uniform forces alone
+            continue
         for action in row.actions:
             if action.case in column:
                 _action(out, b, row, action, column[action.case])
@@ -132,10 +167,6 @@ def _cuts(length: float, own: Iterable[Part], actions: Iterable[MemberAction]) -
 
 
 def _flexibility(out: Block, b: int, row: Row) -> None:
-    if len(row.parts) == 1 and len(row.parts[0].bending) == 1 and len(row.parts[0].shear) <= 1:
-        out.bending[0, :, b] = row.parts[0].bending[0]
-        out.shear[:1, :, b] = row.parts[0].shear[0] if row.parts[0].shear else 0.0
-        return
     at = 0
     for k, (low, high) in enumerate(zip(row.cuts, row.cuts[1:], strict=False)):
         middle = 0.5 * (low + high)
@@ -149,10 +180,6 @@ def _flexibility(out: Block, b: int, row: Row) -> None:
 def _action(out: Block, b: int, row: Row, action: MemberAction, c: int) -> None:
     own = len(row.cuts) - 1
     if isinstance(action, DistributedForce):
-        whole = action.end - action.start > 0.5 * row.cuts[-1]
-        if own == 1 and len(action.transverse) == 1 and whole:
-            out.load[0, 0, c, b] += action.transverse[0]
-            return
         first, last = _segment(row, action.start), _segment(row, action.end)
         for k in range(first, last):
             low, width = row.cuts[k], row.cuts[k + 1] - row.cuts[k]

@@ -58,8 +58,8 @@ def survey(coefficients: Floats, table: FactorTable, samples: int) -> Survey:
         for into, stretches in zip(
             found, look(local, table, top[..., now], bottom[..., now], workspace), strict=True
         ):
-            into.append(_moved(stretches, first))
-    return Survey(top, bottom, _joined(found[0]), _joined(found[1]))
+            into.append(shifted(stretches, first))
+    return Survey(top, bottom, joined(*found[0]), joined(*found[1]))
 
 
 def _fixed(
@@ -241,7 +241,8 @@ def _margins(polynomials: Floats, samples: int) -> tuple[Floats, Floats]:
     return np.maximum(-low, 0.0) * share, np.maximum(high, 0.0) * share
 
 
-def _moved(stretches: Stretches, first: int) -> Stretches:
+def shifted(stretches: Stretches, first: int) -> Stretches:
+    """Return the stretches with their members numbered from ``first``."""
     return Stretches(
         stretches.member + first,
         stretches.row,
@@ -251,12 +252,14 @@ def _moved(stretches: Stretches, first: int) -> Stretches:
     )
 
 
-def _joined(pieces: list[Stretches]) -> Stretches:
+def joined(*pieces: Stretches) -> Stretches:
+    """Return all stretches together."""
     if len(pieces) == 1:
         return pieces[0]
     return Stretches(
-        *(
-            np.concatenate([getattr(piece, name) for piece in pieces])
-            for name in ("member", "row", "segment", "low", "high")
-        )
+        np.concatenate([piece.member for piece in pieces]),
+        np.concatenate([piece.row for piece in pieces]),
+        np.concatenate([piece.segment for piece in pieces]),
+        np.concatenate([piece.low for piece in pieces]),
+        np.concatenate([piece.high for piece in pieces]),
     )
