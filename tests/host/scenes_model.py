@@ -324,3 +324,29 @@ def look():
         "ratio": canvas.devicePixelRatioF(),
         "spot": list(desk.spot or ()),
     }
+
+
+def distribution():
+    """Step through the distribution of a case."""
+    desk = activate()
+    opened(desk, copied())
+    desk.choose_line(1)
+    view = widget(QtWidgets.QComboBox, "SpanledgerView")
+    dock = widget(QtWidgets.QDockWidget, "SpanledgerRecordDock")
+    dock.raise_()
+    settle(0.3)
+    words = widget(QtWidgets.QLabel, "SpanledgerRecordWords")
+    table = widget(QtWidgets.QTableWidget, "SpanledgerRecordTable")
+    found = {"envelope": words.text()}
+    view.setCurrentIndex(next(i for i in range(view.count()) if "Finishes" in view.itemText(i)))
+    settle(0.2)
+    found["whole"] = table.rowCount()
+    click(widget(QtWidgets.QPushButton, "SpanledgerRecordFirst"))
+    found["first"] = table.rowCount()
+    found["rows"], found["marked"] = [], []
+    for _ in range(4):
+        click(widget(QtWidgets.QPushButton, "SpanledgerRecordNext"))
+        found["rows"].append(table.rowCount())
+        found["marked"].append(desk.panels.strip.canvas.chosen)
+    picture_of_screen("distribution")
+    return found

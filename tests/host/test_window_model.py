@@ -102,3 +102,12 @@ def test_the_desk_follows_theme_and_scale(in_freecad, name, style_sheet, scale, 
     assert found["palette"] == palette
     assert found["ratio"] == pytest.approx(float(scale), abs=0.01)  # by the dots per inch
     assert found["spot"] == ["joint", 1]
+
+
+def test_the_distribution_fills_row_by_row(in_freecad):
+    found = in_freecad("scenes_model:distribution")
+
+    assert "Choose a case" in found["envelope"]
+    assert 0 < found["first"] < found["rows"][0] < found["rows"][1] < found["whole"]
+    assert found["rows"] == sorted(found["rows"])
+    assert ["joint", 2] in found["marked"]  # the larger unbalance is released first

@@ -46,6 +46,9 @@ class Desk(QtCore.QObject):
         strip.quantity_changed.connect(lambda _quantity: self._show_diagram())
         strip.canvas.picked.connect(self.choose_spot)
         strip.inspector.decided.connect(self.decide)
+        self.panels.record.order_changed.connect(lambda _order: self._show_record())
+        self.panels.record.released.connect(self._show_released)
+        self.panels.record_dock.visibilityChanged.connect(lambda _on: self._show_record())
         self.files.changed.connect(self._files_changed)
 
     @property
@@ -305,6 +308,14 @@ class Desk(QtCore.QObject):
         if self.solved is not None and self.line is not None:
             self.panels.show_line(self.solved, self.line, self.spot)
             self._show_diagram()
+
+    def _show_record(self) -> None:
+        if self.solved is not None and self.line is not None:
+            self.panels.show_record(self.solved, self.line)
+
+    def _show_released(self, joints: tuple[int, ...]) -> None:
+        """Mark the joint on the strip that a step of the distribution released."""
+        self.panels.strip.canvas.choose(("joint", joints[0]) if joints else self.spot)
 
     def _show_diagram(self) -> None:
         view = self.panels.strip.current_view()

@@ -18,6 +18,7 @@ from ..texts import translate
 from .findings_list import FindingsList
 from .line_desk import LineDesk
 from .line_list import LineList
+from .record_desk import RecordDesk
 from .running import RunningBar
 
 Spot = tuple[str, int]
@@ -44,17 +45,24 @@ class Panels:
             window, "SpanledgerStripDock", translate("Spanledger", "Line strip"), self.strip,
             Qt.DockWidgetArea.BottomDockWidgetArea,
         )  # fmt: skip
+        self.record = RecordDesk()
+        self.record_dock = _dock(
+            window, "SpanledgerRecordDock", translate("Spanledger", "Distribution"), self.record,
+            Qt.DockWidgetArea.BottomDockWidgetArea,
+        )  # fmt: skip
+        window.tabifyDockWidget(self.strip_dock, self.record_dock)
+        self._docks = (self.list_dock, self.record_dock, self.strip_dock)
         self._arranged = False
 
     @property
     def visible(self) -> bool:
         """Whether a dock is shown."""
-        return self.list_dock.isVisible() or self.strip_dock.isVisible()
+        return any(dock.isVisible() for dock in self._docks)
 
     def appear(self) -> None:
         """Show the docks; the first time with a size that suits the window."""
         window = FreeCADGui.getMainWindow()
-        for dock in (self.list_dock, self.strip_dock):
+        for dock in self._docks:  # the strip last: it is the one in front
             dock.show()
             dock.raise_()
         if not self._arranged:
@@ -65,7 +73,7 @@ class Panels:
 
     def disappear(self) -> None:
         """Hide the docks."""
-        for dock in (self.list_dock, self.strip_dock):
+        for dock in self._docks:
             dock.hide()
 
     def show_session(self, session: Session, rows: list[Row]) -> None:
@@ -86,6 +94,17 @@ class Panels:
         strip = strip_of(result, view, session.units, before=_before(session, result.line.mark))
         self.strip.show_strip(strip, session.units, spot)
         self.show_spot(session, line, spot)
+        self.show_record(session, line)
+
+    def show_record(self, session: Session, line: int) -> None:
+        """Show how the moments of a line were distributed, where that is looked at."""
+        view = self.strip.current_view()
+        if view is None or not self.record_dock.isVisible():
+            return
+        from ..present.distribution import recorded
+
+        result, order = session.outcome.lines[line], self.record.chosen_order()
+        self.record.show_record(recorded(result, view, session.units, order))
 
     def show_spot(self, session: Session, line: int, spot: Spot | None) -> None:
         """Show a joint, a span or an action in the inspector; None shows the line."""
@@ -115,6 +134,7 @@ class Panels:
         self.strip.show_views([])
         self.strip.show_strip(None, units)
         self.strip.inspector.clear()
+        self.record.show_record("")
 
 
 def _before(session: Session, mark: str) -> Any:

@@ -1,0 +1,98 @@
+"""The recorded distribution of a line, to be stepped through release by release."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from itertools import accumulate
+from typing import get_args
+
+from analysis_core.distribution.cycles import Order
+from analysis_core.distribution.record import DistributionRecord, distribute
+from analysis_core.effects.combinations import combine_line
+from analysis_core.errors import AnalysisError
+from analysis_core.model import Combination
+from analysis_core.record_rows import RecordRow, RecordTable, closing_note, record_tables
+from analysis_core.results import LineResult
+from analysis_core.units import DisplayUnits
+
+from .diagrams import View
+
+ORDERS: tuple[Order, ...] = get_args(Order)
+ORDER_WORDS = {
+    "largest": "largest unbalance first",
+    "together": "all joints together",
+    "alternate": "every second joint in turn",
+}
+_BEGINNING = ("stiffness", "factor", "carry")
+
+
+@dataclass(frozen=True, slots=True)
+class Step:
+    """What is shown at one step: a table, how many of its rows, and the joints just released."""
+
+    table: int
+    rows: int
+    new: int
+    """How many of the rows were not there a step before."""
+    joints: tuple[int, ...]
+    words: str
+
+
+@dataclass(frozen=True, slots=True)
+class Recorded:
+    """The tables of a case or combination, and the steps through them."""
+
+    tables: tuple[RecordTable, ...]
+    steps: tuple[Step, ...]
+    closing: str
+
+
+def recorded(
+    result: LineResult, view: View, units: DisplayUnits, order: Order = "largest"
+) -> Recorded | str:
+    """Return the recorded distribution of a line, or why there is none, in a sentence."""
+    if result.status != "balanced":
+        return "This line is not analysed; its findings say why."
+    if view.kind == "envelope":
+        return (
+            "An envelope gathers many distributions. Choose a case or a combination to see the "
+            "one that belongs to it."
+        )
+    line = result.line
+    if view.kind == "combination":
+        line = combine_line(line, [Combination(view.name, "strength", dict(view.factors))])
+    if not any(action.case == view.name for action in line.actions):
+        return f"Nothing acts on {line.mark} in {view.name}."
+    try:
+        record = distribute(line, view.name, order=order)
+    except AnalysisError as error:
+        return str(error)
+    tables = tuple(record_tables(record, units))
+    return Recorded(tables, tuple(_steps(tables, record)), closing_note(record, units))
+
+
+def _steps(tables: tuple[RecordTable, ...], record: DistributionRecord) -> list[Step]:
+    steps: list[Step] = []
+    for number, table in enumerate(tables):
+        releases = iter(record.tables[number].rows)
+        groups = _groups(table.rows)
+        for group, shown in zip(groups, accumulate(len(g) for g in groups), strict=True):
+            released = next(releases).joints if group[0].kind == "balance" else ()
+            words = f"{table.title}: {group[0].name}"
+            steps.append(Step(number, shown, len(group), tuple(released), words))
+    return steps
+
+
+def _groups(rows: tuple[RecordRow, ...]) -> list[list[RecordRow]]:
+    """Rows that belong to one step: the stiffnesses, the fixed-end moments, each release, sums."""
+    groups: list[list[RecordRow]] = []
+    for row in rows:
+        follows = (
+            (row.kind in _BEGINNING and groups and groups[-1][0].kind in _BEGINNING)
+            or row.kind in ("known", "carried", "exact")
+        )  # fmt: skip
+        if follows and groups:
+            groups[-1].append(row)
+        else:
+            groups.append([row])
+    return groups
