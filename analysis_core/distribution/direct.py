@@ -85,6 +85,13 @@ class SpanStiffness:
     held: Floats
 
 
+def prismatic(length: Floats, rigidity: Floats, held: Floats) -> SpanStiffness:
+    """Return the stiffness of prismatic spans: lengths m and EI N·m² (n, L), held (n + 1, L)."""
+    slim = rigidity / length
+    half = 2.0 * slim
+    return SpanStiffness(half + half, half + half, half, 12.0 * slim * slim, held)
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class SpanMoments:
     """start, end (n, C, L) N·m on the spans, rotations (n + 1, C, L) rad, clockwise positive."""

@@ -13,7 +13,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.distribution.direct import SpanStiffness
+from analysis_core.distribution.direct import SpanStiffness, prismatic
 from analysis_core.distribution.fixed_end import held_moments
 from analysis_core.distribution.plain_lines import PlainLine
 from analysis_core.distribution.release import CLAMP
@@ -70,13 +70,11 @@ def spans_of(lines: Sequence[PlainLine]) -> Spans:
     special = any(line.special for line in lines)
     if special:
         _stand_in(lines, rigidity)
-    slim = rigidity / length
-    half = 2.0 * slim
     turned: Floats = length / (6.0 * rigidity)
     spans = Spans(
         length,
         rigidity,
-        SpanStiffness(half + half, half + half, half, 12.0 * slim * slim, held),
+        prismatic(length, rigidity, held),
         (2.0 * turned, 2.0 * turned, -turned),
         np.zeros((2, *length.shape)),
         np.zeros((2, *length.shape), dtype=bool),
