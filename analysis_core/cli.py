@@ -112,6 +112,10 @@ def _survey_options(commands: Any) -> None:
     about = "list lines, spans, supports, actions and findings; solve nothing"
     command = _command(commands, "survey", _survey, about)
     _model_options(command)
+    command.add_argument(
+        "--job-out", metavar="FILE",
+        help="write a starting job file: everything that was assumed, with the reasons",
+    )  # fmt: skip
 
 
 def _balance_options(commands: Any) -> None:
@@ -179,6 +183,8 @@ def _rules_options(commands: Any) -> None:
 def _survey(options: argparse.Namespace) -> int:
     settings = _settings(options)
     survey = pipeline.survey(options.model, settings, progress=_progress(), only=options.line)
+    if options.job_out:
+        _write(Path(options.job_out), pipeline.job_text(survey, settings))
     units = display_units(settings.display.system, settings.display.units)
     _put(options, lambda: pipeline.survey_document(survey),
          survey_text(survey.model, survey.file, survey.schema, units))  # fmt: skip

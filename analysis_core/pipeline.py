@@ -69,6 +69,8 @@ class Survey:
     fingerprint: str
     model: LineModel
     findings: tuple[Finding, ...]
+    route: str = "physical"
+    """"analytical" or "physical"."""
 
 
 def survey(
@@ -107,7 +109,14 @@ def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ())
     findings = tuple(dict.fromkeys((*reading.findings, *model.findings)))
     model = replace(model, findings=findings, names=_names(reading.building))
     _check_marks(model, only)
-    return Survey(reading.file, reading.schema, reading.fingerprint, model, findings)
+    return Survey(
+        reading.file,
+        reading.schema,
+        reading.fingerprint,
+        model,
+        findings,
+        reading.building.route,
+    )
 
 
 def run(
@@ -237,6 +246,14 @@ def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
         return distribution_parts(result, units)
 
     return write_sheet(outcome, units, title=settings.title, date=today, extra=extra)
+
+
+def job_text(found: Survey, settings: Settings) -> str:
+    """Return a starting job file for a survey, as YAML text."""
+    from analysis_core.job_out import job_text as text
+
+    physical = found.route == "physical"
+    return text(found.model, file=found.file, rules=settings.rules.name, physical=physical)
 
 
 def survey_document(found: Survey) -> dict[str, Any]:
