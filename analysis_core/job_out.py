@@ -97,9 +97,8 @@ def _line_supports(line: Line, handing: set[tuple[str, int]]) -> Iterator[str]:
         yield f"  # {safe(line.mark)}, joint {joint.id}: {safe(joint.reason)}"
         place = _place(line, member, joint.id)
         mute = "# " if (line.mark, joint.id) in handing else ""
-        yield (
-            f"  {mute}- {{on: {{id: {_quoted(member.element)}}}, {place}, {_condition(joint.support)}}}"
-        )
+        on = f"on: {{id: {_quoted(member.element)}}}"
+        yield f"  {mute}- {{{on}, {place}, {_condition(joint.support)}}}"
 
 
 def _member_at(line: Line, joint: Joint) -> Member | None:
