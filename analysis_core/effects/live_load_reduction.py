@@ -16,6 +16,28 @@ class Reduction:
     working: str
 
 
+def reduction(
+    rule: str,
+    figures: Mapping[str, float],
+    *,
+    area: float,
+    category: str = "",
+    psi0: float = 1.0,
+    intensity: float = 0.0,
+    element_factor: float = 2.0,
+) -> Reduction:
+    """Return the reduction for a beam by the rule of a rule set ("en-1991", "asce-7").
+
+    ``category`` is that of the rule set, ``psi0`` belongs to it; ``intensity`` in Pa.  A rule set
+    without a rule reduces nothing.
+    """
+    if rule == "en-1991":
+        return en_1991_area(figures, psi0=psi0, area=area, category=category)
+    if rule == "asce-7":
+        return asce_7(figures, area=area, element_factor=element_factor, intensity=intensity)
+    return Reduction(1.0, "", "the rule set has no reduction by area")
+
+
 def en_1991_area(
     figures: Mapping[str, float], *, psi0: float, area: float, category: str
 ) -> Reduction:

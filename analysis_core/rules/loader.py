@@ -153,6 +153,7 @@ def _rule_set(data: Mapping[str, Any]) -> RuleSet:
         reduction=data.get("reduction", ""),
         rounding=faces.get("rounding", False),
         monolithic=faces.get("monolithic", False),
+        faces_clause=faces.get("clause", ""),
     )
     _check_names(out)
     return out

@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 from typing import Literal
 
 from analysis_core.effects.arrangements import Pattern
+from analysis_core.effects.faces import FaceRule
 from analysis_core.model import LimitState, Nature
 
 Several = Literal["together", "in turn"]
@@ -126,10 +127,23 @@ class RuleSet:
     """Whether peaks over bearings may be rounded."""
     monolithic: bool = False
     """Whether moments at the faces of monolithic supports may be used."""
+    faces_clause: str = ""
 
     def figure(self, name: str) -> float:
         """Return the value of a figure.  Raises KeyError for one that the set does not have."""
         return self.figures[name].value
+
+    def values(self) -> dict[str, float]:
+        """Return all figures by name."""
+        return {name: figure.value for name, figure in self.figures.items()}
+
+    def face_rule(self) -> FaceRule:
+        """Return what the set allows for moments over supports."""
+        return FaceRule(
+            rounding=self.values().get("face.rounding", 0.0) if self.rounding else 0.0,
+            share=self.values().get("face.share", 0.0) if self.monolithic else 0.0,
+            clause=self.faces_clause,
+        )
 
     def value(self, factor: str, action: str = "") -> float:
         """Return a factor such as "gamma_Q * psi0" for the named action."""

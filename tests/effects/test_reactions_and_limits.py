@@ -11,7 +11,12 @@ from analysis_core.csv_text import csv_text
 from analysis_core.effects.arrangements import Arrangements, merged, split_by_span, whole_cases
 from analysis_core.effects.deflection_limits import DeflectionLimit, span_deflections, spans_of
 from analysis_core.effects.envelopes import envelope
-from analysis_core.effects.live_load_reduction import asce_7, en_1991_area, en_1991_storeys
+from analysis_core.effects.live_load_reduction import (
+    asce_7,
+    en_1991_area,
+    en_1991_storeys,
+    reduction,
+)
 from analysis_core.effects.reactions import governing, schedule, schedule_table, unfactored
 from analysis_core.effects.stations import stations
 from analysis_core.model import Combination, JointMovement, Support
@@ -126,6 +131,15 @@ def test_asce_7_live_load_reduction_on_worked_numbers():
     heavy = {"area": 900.0 * ft2 / 2.0, "element_factor": 2.0, "intensity": 6000.0}
     assert asce_7(ASCE, **heavy).factor == 1.0
     assert asce_7(ASCE, **heavy, floors=2).factor == pytest.approx(0.8)
+
+
+def test_the_rule_of_the_rule_set_is_used():
+    en = reduction("en-1991", EN, area=40.0, category="B", psi0=0.7)
+    us = reduction("asce-7", ASCE, area=450.0 * 0.3048**2, intensity=2400.0)
+
+    assert (en.factor, en.clause) == (pytest.approx(0.75), "EN 1991-1-1 6.3.1.2(10)")
+    assert us.factor == pytest.approx(0.75, rel=1e-3)
+    assert reduction("", {}, area=40.0).factor == 1.0
 
 
 def deflections(line, limit, cases=("G", "Q"), arrangements=EVERY, combinations=SERVICE):

@@ -1,5 +1,7 @@
 """Redistribution: statics, where it is possible, and the limits of the codes on worked numbers."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from small_solver import FIXED, PIN, beam_line, solve, uniform
@@ -15,9 +17,11 @@ from analysis_core.effects.redistribution import (
     support_moments_before_and_after,
 )
 from analysis_core.effects.redistribution_limits import Known, largest_allowed, unmet_conditions
+from analysis_core.effects.redistribution_plan import plan_redistribution
 from analysis_core.effects.stations import stations
 from analysis_core.errors import ModelError
-from analysis_core.model import Combination, Joint, Line, Member, Piece, PointForce
+from analysis_core.model import Combination, Joint, Line, Material, Member, Piece, PointForce
+from analysis_core.settings import Redistribution
 
 W = 20e3
 EN = {k: f.value for k, f in rules.load("en-1990").figures.items()}
@@ -222,3 +226,70 @@ def test_aisc_360_raises_the_positive_moment_by_the_mean_of_the_negative_ones():
 def test_an_unknown_rule_is_a_slip_of_the_caller():
     with pytest.raises(ValueError, match="no rule for redistribution is called 'x'"):
         largest_allowed("x", EN, Known())
+
+
+def of_material(line, category, **strength):
+    material = Material("M", 210e9, category=category, strength=tuple(strength.items()))
+    members = tuple(replace(m, material=material) for m in line.members)
+    return replace(line, members=members, elements=("guid",))
+
+
+def planned(line, wish, rule_set="en-1990"):
+    loaded = rules.load(rule_set)
+    return plan_redistribution(line, wish, loaded.redistribution, loaded.values())
+
+
+def test_plan_takes_the_largest_allowed_for_the_material():
+    steel = of_material(line_of([6.0, 5.0, 7.0]), "steel")
+
+    found = planned(steel, Redistribution(largest=True))
+
+    assert found.fractions == {1: 0.15, 2: 0.15}
+    assert found.limit.clause == "EN 1993-1-1 5.4.1(4)B"
+    assert found.findings == ()
+
+
+def test_plan_warns_above_the_limit_and_where_a_condition_fails():
+    concrete = of_material(line_of([6.0, 2.0]), "concrete", fck=30e6)
+    wish = Redistribution(fraction=0.25, neutral_axis_ratio=0.3, ductility="B")
+
+    found = planned(concrete, wish)
+
+    # 1 - (0.44 + 1.25 * 0.3) = 18.5 %.
+    assert found.fractions == {1: 0.25}
+    over, ratio = found.findings
+    assert over.slug == "redistribution-over-limit"
+    assert "25.0 %" in over.message
+    assert "18.5 %" in over.message
+    assert ratio.slug == "redistribution-condition"
+    assert ratio.line == "T-1"
+
+
+def test_plan_without_the_needed_facts_redistributes_nothing_and_says_what_is_missing():
+    concrete = of_material(line_of([6.0, 5.0]), "concrete")
+
+    found = planned(concrete, Redistribution(largest=True))
+
+    assert found.fractions == {}
+    (finding,) = found.findings
+    assert (finding.severity, finding.slug) == ("warning", "redistribution-limit-unknown")
+    assert "xu/d" in finding.message
+
+
+def test_plan_for_single_joints_reports_those_it_cannot_serve():
+    steel = of_material(line_of([6.0, 5.0, 2.0], [PIN, PIN, PIN, None]), "steel")
+
+    found = planned(steel, Redistribution(per_joint={1: 0.1, 2: 0.1, 8: 0.1}))
+
+    assert found.fractions == {1: 0.1}
+    assert [f.slug for f in found.findings] == ["not-redistributed"] * 2
+
+
+def test_plan_for_an_unknown_material():
+    line = line_of([6.0, 5.0])
+
+    asked = planned(line, Redistribution(fraction=0.1))
+    largest = planned(line, Redistribution(largest=True))
+
+    assert (asked.fractions, [f.severity for f in asked.findings]) == ({1: 0.1}, ["note"])
+    assert (largest.fractions, [f.severity for f in largest.findings]) == ({}, ["warning"])
