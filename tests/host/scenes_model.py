@@ -350,3 +350,40 @@ def distribution():
         found["marked"].append(desk.panels.strip.canvas.chosen)
     picture_of_screen("distribution")
     return found
+
+
+def shade():
+    """Tell lines apart by change after a decision, and follow a reaction down."""
+    desk = activate()
+    opened(desk, copied())
+    from freecad.spanledger.present import decisions
+    from freecad.spanledger.present.look import VIEW
+
+    tabs = widget(QtWidgets.QTabWidget, "SpanledgerTabs")
+    tabs.setCurrentIndex(2)
+    settle(0.2)
+    tree = widget(QtWidgets.QTreeWidget, "SpanledgerBearings")
+    found = {"bearings": tree.topLevelItemCount()}
+    picture_of_screen("reactions")
+    line = desk.solved.outcome.lines[0].line
+    where = decisions.where_is(line, 0)
+    desk.decide("fixed", lambda text: decisions.decide_support(text, where, "fixed"))
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    box = widget(QtWidgets.QComboBox, "SpanledgerShadedBy")
+    box.setCurrentIndex(box.findData("change"))
+    desk.choose_line(10)
+    image = picture_of_view("shaded_view")
+    picture_of_screen("shaded")
+    found["changed"] = count_pixels(image, VIEW["attention"], 30)
+    box.setCurrentIndex(box.findData("plain"))
+    found["plain"] = count_pixels(picture_of_view("plain_view"), VIEW["attention"], 30)
+
+    desk.choose_line(3)
+    canvas = widget(QtWidgets.QWidget, "SpanledgerCanvas")
+    spot = next(s for s in canvas.drawing.spots if (s.kind, s.number) == ("joint", 0))
+    click(canvas, QtCore.QPoint(round((spot.left + spot.right) / 2), round(spot.bottom - 4)))
+    lead = widget(QtWidgets.QPushButton, "SpanledgerPath0")
+    found["words"] = lead.text()
+    click(lead)
+    found["carried_by"] = desk.line
+    return found

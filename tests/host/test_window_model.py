@@ -111,3 +111,12 @@ def test_the_distribution_fills_row_by_row(in_freecad):
     assert 0 < found["first"] < found["rows"][0] < found["rows"][1] < found["whole"]
     assert found["rows"] == sorted(found["rows"])
     assert ["joint", 2] in found["marked"]  # the larger unbalance is released first
+
+
+def test_lines_that_changed_stand_out_and_reactions_lead_downward(in_freecad):
+    found = in_freecad("scenes_model:shade")
+
+    assert found["bearings"] == 28
+    assert found["changed"] > 50 > found["plain"]
+    assert found["words"] == "↓ on FF-01"
+    assert found["carried_by"] == 0

@@ -13,6 +13,7 @@ from .. import document
 from ..present.listing import Row, rows_of
 from ..present.moved import moved_words
 from ..present.posting import posted_words, preview
+from ..present.shades import shade_numbers, shades
 from ..qt import QtCore, QtWidgets
 from ..session import Session
 from ..texts import translate
@@ -46,6 +47,9 @@ class Desk(QtCore.QObject):
         strip.quantity_changed.connect(lambda _quantity: self._show_diagram())
         strip.canvas.picked.connect(self.choose_spot)
         strip.inspector.decided.connect(self.decide)
+        strip.inspector.line_wanted.connect(self.choose_line)
+        strip.shading_changed.connect(lambda _way: self._shade())
+        self.panels.bearings.wanted.connect(self.show_bearing)
         self.panels.record.order_changed.connect(lambda _order: self._show_record())
         self.panels.record.released.connect(self._show_released)
         self.panels.record_dock.visibilityChanged.connect(lambda _on: self._show_record())
@@ -244,6 +248,17 @@ class Desk(QtCore.QObject):
         self.choose_line(row.line)
         self.link.look_at(row.line, row.elements)
 
+    def show_bearing(self, row: Any) -> None:
+        """Choose the first line that bears on an element, at the joint where it does."""
+        if not row.lines or self.solved is None:
+            return
+        self.choose_line(row.lines[0])
+        joints = self.solved.outcome.lines[row.lines[0]].line.joints
+        number = next((j.id for j in joints if j.element == row.element), None)
+        if number is not None:
+            self.spot = ("joint", number)
+            self.panels.show_spot(self.solved, row.lines[0], self.spot)
+
     def toggle_building(self) -> None:
         """Show the building faintly, or hide it."""
         self.picture.building_shown = not self.picture.building_shown
@@ -301,8 +316,18 @@ class Desk(QtCore.QObject):
         count = len(session.outcome.lines)
         if self.line is None or self.line >= count:
             self.line = 0 if count else None
+        self._shade()
         self.choose_line(self.line)
         self.picture.show_building(name, session)
+
+    def _shade(self) -> None:
+        """Tell the lines of the active model apart in the 3D view as is asked for."""
+        way = self.panels.strip.shaded_by.currentData()
+        self.panels.strip.legend.show_shades(shades(way))
+        session = self.solved
+        if session is not None:
+            numbers = shade_numbers(way, self._rows(session), session.outcome, session.previous)
+            self.picture.shade(FreeCAD.ActiveDocument.Name, way, numbers)
 
     def _show_view(self) -> None:
         if self.solved is not None and self.line is not None:
@@ -328,6 +353,7 @@ class Desk(QtCore.QObject):
         self.picture.show_states(name, [row.state for row in rows])
         if FreeCAD.ActiveDocument is not None and FreeCAD.ActiveDocument.Name == name:
             self.panels.list.show_rows(rows, self.sessions[name].units)
+            self._shade()
 
     def _rows(self, session: Session) -> list[Row]:
         return rows_of(session.outcome, session.units, stale=session.stale, posted=session.posted)

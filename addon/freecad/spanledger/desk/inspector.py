@@ -26,6 +26,7 @@ from ..present.inspector import (
     stiffness_words,
     support_choice,
 )
+from ..present.load_path import Path
 from ..qt import QtWidgets, Signal
 from ..texts import translate
 from .fields import button, choice, entry, facts_label, facts_text, heading
@@ -37,6 +38,7 @@ class Inspector(QtWidgets.QScrollArea):
     """Rebuilt for every spot: the forms are small, and stale fields cannot stay."""
 
     decided = Signal(str, object)
+    line_wanted = Signal(int)
 
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
@@ -118,6 +120,14 @@ class Inspector(QtWidgets.QScrollArea):
             label.setWordWrap(True)
             self._layout.addWidget(label)
         self._layout.addStretch(1)
+
+    def show_paths(self, paths: list[Path]) -> None:
+        """Show the lines that carry this spot or bear on it, as buttons that lead there."""
+        for number, path in enumerate(paths):
+            lead = button(f"SpanledgerPath{number}", path.words,
+                          translate("Spanledger", "Go to that line"))  # fmt: skip
+            lead.clicked.connect(lambda _on=False, line=path.line: self.line_wanted.emit(line))
+            self._layout.insertWidget(2 + number, lead)
 
     # Forms.
     def _rules_form(self, current: str) -> None:

@@ -7,11 +7,13 @@ from typing import Any
 from analysis_core.units import DisplayUnits
 
 from ..present.diagrams import View
+from ..present.shades import WAYS
 from ..present.strip import Strip
 from ..qt import Qt, QtCore, QtWidgets, Signal
 from ..texts import tr, translate
 from .canvas import Canvas
 from .inspector import Inspector
+from .legend import Legend
 
 
 class LineDesk(QtWidgets.QWidget):
@@ -20,6 +22,7 @@ class LineDesk(QtWidgets.QWidget):
     view_changed = Signal(object)
     spot_picked = Signal(object)
     quantity_changed = Signal(str)
+    shading_changed = Signal(str)
 
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
@@ -51,6 +54,15 @@ class LineDesk(QtWidgets.QWidget):
             self.in_3d.addItem(text, quantity)
         self.in_3d.setToolTip(translate("Spanledger", "What the 3D view shows along all lines"))
         top.addWidget(self.in_3d)
+        self.shaded_by = QtWidgets.QComboBox()
+        self.shaded_by.setObjectName("SpanledgerShadedBy")
+        for way in WAYS:
+            text = translate("Spanledger", "lines: {way}").format(way=tr(_WAYS[way]))
+            self.shaded_by.addItem(text, way)
+        self.shaded_by.setToolTip(translate("Spanledger", "How lines are told apart in 3D"))
+        self.legend = Legend()
+        top.addWidget(self.shaded_by)
+        top.addWidget(self.legend)
         top.addWidget(self.title, 1)
         self.canvas = Canvas()
         layout = QtWidgets.QVBoxLayout(self)
@@ -66,6 +78,9 @@ class LineDesk(QtWidgets.QWidget):
             lambda _index: self.quantity_changed.emit(self.in_3d.currentData())
         )
         self.canvas.picked.connect(self.spot_picked)
+        self.shaded_by.currentIndexChanged.connect(
+            lambda _index: self.shading_changed.emit(self.shaded_by.currentData())
+        )
 
     def show_views(self, views: list[View]) -> None:
         """Offer these views; the one that was chosen stays if it is among them."""
@@ -113,4 +128,5 @@ def _scrolled(widget: Any) -> Any:
     return area
 
 
+_WAYS = {"plain": "alike", "state": "by state", "change": "by change"}
 _KINDS = {"envelope": "Envelope", "combination": "Combination", "case": "Case"}

@@ -11,10 +11,12 @@ from analysis_core.units import display_units
 from ..present.diagrams import views_of
 from ..present.findings import finding_rows
 from ..present.listing import Row
+from ..present.load_path import bearing_rows, paths_at_joint, paths_on_member
 from ..present.strip import strip_of
 from ..qt import Qt, QtWidgets
 from ..session import Session
 from ..texts import translate
+from .bearings_list import BearingsList
 from .findings_list import FindingsList
 from .line_desk import LineDesk
 from .line_list import LineList
@@ -37,6 +39,8 @@ class Panels:
         self.tabs.setObjectName("SpanledgerTabs")
         self.tabs.addTab(self.list, translate("Spanledger", "Lines"))
         self.tabs.addTab(self.findings, translate("Spanledger", "Findings"))
+        self.bearings = BearingsList()
+        self.tabs.addTab(self.bearings, translate("Spanledger", "Reactions"))
         self.list_dock = _dock(
             window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
             _stacked(self.tabs, self.running), Qt.DockWidgetArea.RightDockWidgetArea,
@@ -82,6 +86,7 @@ class Panels:
         self.list.show_rows(rows, session.units)
         found = finding_rows(session.outcome)
         self.findings.show_rows(found)
+        self.bearings.show_rows(bearing_rows(session.outcome, session.units), session.units)
         title = translate("Spanledger", "Findings ({count})").format(count=len(found))
         self.tabs.setTabText(1, title)
 
@@ -115,8 +120,10 @@ class Panels:
         kind, number = spot or ("", 0)
         if kind == "joint" and number < len(result.line.joints):
             inspector.show_joint(result, number, view, outcome, units)
+            inspector.show_paths(paths_at_joint(outcome, line, number))
         elif kind == "member" and number < len(result.line.members):
             inspector.show_member(result, number, outcome, units)
+            inspector.show_paths(paths_on_member(outcome, line, number, units))
         elif kind == "action" and number < len(result.line.actions):
             action = result.line.actions[number]
             shown = self.strip.canvas.strip.actions
@@ -130,6 +137,7 @@ class Panels:
         units = display_units()
         self.list.show_rows([], units)
         self.findings.show_rows([])
+        self.bearings.show_rows([], units)
         self.tabs.setTabText(1, translate("Spanledger", "Findings"))
         self.strip.show_views([])
         self.strip.show_strip(None, units)

@@ -10,6 +10,7 @@ import FreeCADGui
 from .. import document
 from ..present.diagrams import View, ordinates_of
 from ..present.scene import Scene, drawn_stations
+from ..present.shades import shades
 from ..qt import QtCore
 from ..session import Session
 from ..texts import translate
@@ -49,6 +50,12 @@ class Picture:
             stations = drawn_stations(len(scene.ends))
             ordinates = ordinates_of(session.outcome.lines, view, quantity, stations)
             document.show_diagram(obj, scene, ordinates)
+
+    def shade(self, name: str, way: str, numbers: list[int]) -> None:
+        """Tell lines apart by a class each."""
+        obj = document.find_beam_lines(FreeCAD.getDocument(name))
+        if obj is not None:
+            obj.ViewObject.Proxy.shade(shades(way), numbers)
 
     def show_states(self, name: str, states: list[str]) -> None:
         """Write down the states of the lines."""

@@ -33,6 +33,7 @@ class Lines:
         casing: Colour | None = None,
         nearer: int = 2,
         pickable: bool = True,
+        pattern: int = 0xFFFF,
     ) -> None:
         self.node = coin.SoSeparator()
         self._points = coin.SoCoordinate3()
@@ -40,7 +41,10 @@ class Lines:
         self.node.addChild(self._points)
         if casing is not None:
             self.node.addChild(_stroke(casing, width + 3.0, self._lines, nearer=1, pickable=False))
-        self.node.addChild(_stroke(colour, width, self._lines, nearer=nearer, pickable=pickable))
+        stroke = _stroke(
+            colour, width, self._lines, nearer=nearer, pickable=pickable, pattern=pattern
+        )
+        self.node.addChild(stroke)
 
     def set_segments(self, ends: np.ndarray) -> None:
         """Draw straight segments (n, 2, 3)."""
@@ -157,7 +161,13 @@ class Labels:
 
 
 def _stroke(
-    colour: Colour, width: float, lines: coin.SoIndexedLineSet, *, nearer: int, pickable: bool
+    colour: Colour,
+    width: float,
+    lines: coin.SoIndexedLineSet,
+    *,
+    nearer: int,
+    pickable: bool,
+    pattern: int = 0xFFFF,
 ) -> coin.SoSeparator:
     stroke = coin.SoSeparator()
     # Lines over lines of the same place: each level lies a hair nearer to the eye.
@@ -168,6 +178,7 @@ def _stroke(
     pick.style = coin.SoPickStyle.SHAPE if pickable else coin.SoPickStyle.UNPICKABLE
     base.rgb = colour
     style.lineWidth = width
+    style.linePattern = pattern
     for node in (pick, base, style, lines):
         stroke.addChild(node)
     return stroke

@@ -15,6 +15,7 @@ from ..document import scene_in, supports_in
 from ..present.layout import DOWNWARD
 from ..present.look import VIEW
 from ..present.scene import Scene, filled, support_lines, symbol_size
+from ..present.shades import Shade
 from .nodes import Body, Faces, Labels, Lines
 
 LINES, DIAGRAMS = "Lines", "Lines and diagrams"
@@ -44,7 +45,8 @@ class BeamLinesView:
         )
         self.sagging = Faces(palette.parts("sagging"))
         self.hogging = Faces(palette.parts("hogging"))
-        self.chosen = Lines(palette.parts("chosen"), 4.5, nearer=3, pickable=False)
+        self.shaded = coin.SoSeparator()
+        self.chosen = Lines(palette.parts("chosen"), 4.5, nearer=4, pickable=False)
         self.labels = Labels(palette.parts("ink"))
         self.building = Body(palette.parts("faint"))
         plain, full = coin.SoSeparator(), coin.SoSeparator()
@@ -52,8 +54,10 @@ class BeamLinesView:
             model = coin.SoLightModel()
             model.model = coin.SoLightModel.BASE_COLOR
             root.addChild(model)
-            for part in (self.chosen, self.lines, self.supports, self.labels):
+            for part in (self.lines, self.supports, self.labels):
                 root.addChild(part.node)
+            root.addChild(self.shaded)
+            root.addChild(self.chosen.node)
         for faces in (self.sagging, self.hogging):
             full.addChild(faces.node)
         for root in (plain, full):
@@ -96,6 +100,20 @@ class BeamLinesView:
         else:
             points = 1000.0 * shape.points - np.array(self.scene.origin)
             self.building.set(points, shape.triangles, shape.edges)
+
+    def shade(self, classes: tuple[Shade, ...], numbers: list[int]) -> None:
+        """Draw the lines of each class in its own colour and stroke, over the plain ones."""
+        self.shaded.removeAllChildren()
+        if len(classes) < 2 or len(numbers) <= int(self.scene.line_index.max(initial=-1)):
+            return
+        of_member = np.array(numbers, dtype=int)[self.scene.line_index]
+        for number, shade in enumerate(classes):
+            batch = Lines(
+                VIEW.parts(shade.role), shade.width, casing=VIEW.parts("ground"), nearer=3,
+                pickable=False, pattern=shade.pattern,
+            )  # fmt: skip
+            batch.set_segments(self.scene.ends[of_member == number])
+            self.shaded.addChild(batch.node)
 
     def choose(self, line: int | None, labels: list[tuple[Any, str]] | None = None) -> None:
         """Mark one line, with texts at points; None marks nothing."""
