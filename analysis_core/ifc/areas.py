@@ -2,25 +2,22 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Sequence
 from typing import Any, NamedTuple
 
 import numpy as np
 
 from analysis_core.building import Area
-from analysis_core.ifc import frames, outline
 from analysis_core.ifc.bodies import Item, Mesh, Prism
 from analysis_core.ifc.elements import Elements
-from analysis_core.ifc.extents import Extent, ExtentReader
+from analysis_core.ifc.extents import Extent, ExtentReader, plan_rings
 from analysis_core.ifc.frames import Frame
-from analysis_core.ifc.mesh_prisms import hull, section_loops
+from analysis_core.ifc.mesh_prisms import hull
 from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.unreadable import READ_ERRORS
 
 Ring = tuple[tuple[float, float], ...]
-_CHORDS = 32
 _THROUGH = 0.02
 _SAME_AREA = 0.01
 
@@ -118,33 +115,19 @@ def _plan(item: Item, frame: Frame) -> _Plan | None:
 
 
 def _prism_plan(prism: Prism, frame: Frame) -> _Plan | None:
-    """A profile carried upwards is seen as itself; one carried sideways as its strip."""
-    whole = frames.compose(frame, prism.frame)
-    vx, vy, vz = frames.direction(frame, *prism.vector)
-    if math.hypot(vx, vy) > 1e-6 * abs(vz) and abs(vz) < 0.2 * math.hypot(vx, vy):
-        corners = np.vstack(
-            [
-                frames.images(whole, _flat(rows)) + shift
-                for rows in prism.profile.drawn.loops
-                for shift in (np.zeros(3), np.array([vx, vy, vz]))
-            ]
-        )
-        return _Plan(hull(corners[:, :2]), ())
-    rings = [frames.images(whole, _flat(rows))[:, :2] for rows in prism.profile.drawn.loops]
-    if abs(_area(rings[0])) < 1e-6:
+    rings = plan_rings(prism, frame)
+    if rings:
+        return _Plan(rings[0], tuple(rings[1:]))
+    # Carried sideways: what it sweeps.
+    reach = ExtentReader().extent([prism], frame)
+    if reach is None or len(reach.corners) < 3:
         return None
-    return _Plan(rings[0], tuple(rings[1:]))
-
-
-def _flat(rows: Floats) -> Floats:
-    flat = outline.flattened(rows, _CHORDS)[:, :2]
-    return np.column_stack([flat, np.zeros(len(flat))])
+    return _Plan(np.array(reach.corners), ())
 
 
 def _mesh_plan(mesh: Mesh, frame: Frame) -> _Plan | None:
-    placed = mesh.moved(frame)
-    rings = [rows[:, :2] for rows in section_loops(placed, axis=2)]
-    corners = hull(placed.points[:, :2])
+    rings = plan_rings(mesh, frame)
+    corners = hull(mesh.moved(frame).points[:, :2])
     if not rings or abs(_area(rings[0])) < 0.6 * abs(_area(corners)):
         # Sloping slabs are not cut whole by a level plane.
         rings = [corners]

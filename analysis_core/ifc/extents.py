@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable, Sequence
 from typing import NamedTuple
 
@@ -9,12 +10,14 @@ import numpy as np
 
 from analysis_core.ifc import frames, outline
 from analysis_core.ifc.bodies import Curved, Item, Mesh, Prism
+from analysis_core.ifc.convex_pieces import convex_pieces
 from analysis_core.ifc.frames import Frame, Vector
-from analysis_core.ifc.mesh_prisms import hull
+from analysis_core.ifc.mesh_prisms import hull, section_loops
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.sections import Profile
 from analysis_core.ifc.sticks import Stick, after_cut
 
+_FULL = 0.9  # of its convex outline: nearly convex
 Corners = tuple[tuple[float, float], ...]
 
 
@@ -40,6 +43,34 @@ class ExtentReader:
                 return found
         points = [p for item in items for p in self._points(item, frame)]
         return extent_of(points) if points else None
+
+    def pieces(self, items: Sequence[Item], frame: Frame) -> list[Extent]:
+        """Return the extents of convex pieces of a body, one where it is convex in plan.
+
+        A wall round a corner or a lift shaft would, as one convex outline, also cover what it
+        encloses.
+        """
+        whole = self.extent(items, frame)
+        if whole is None:
+            return []
+        found: list[Extent] = []
+        for item in items:
+            one = whole if len(items) == 1 else self.extent([item], frame)
+            if one is not None:
+                found.extend(self._split(item, frame, one))
+        solid = sum(_area(piece.corners) for piece in found)
+        if len(found) > 1 and solid < _FULL * _area(whole.corners):
+            return found
+        return [whole]
+
+    def _split(self, item: Item, frame: Frame, whole: Extent) -> list[Extent]:
+        rings = plan_rings(item, frame)
+        if not rings or abs(_ring_area(rings)) >= _FULL * _area(whole.corners):
+            return [whole]
+        pieces = convex_pieces(rings)
+        if not pieces:
+            return [whole]
+        return [Extent(piece, whole.bottom, whole.top) for piece in pieces]
 
     def _upright_extent(self, prism: Prism, frame: Frame) -> Extent | None:
         """The extent of an uncut prism that stands upright: its profile's hull, placed."""
@@ -97,6 +128,39 @@ class ExtentReader:
             known = (profile, tuple((x, y) for x, y in corners))
             self._hulls[id(profile)] = known
         return known[1]
+
+
+def plan_rings(item: Item, frame: Frame) -> list[Floats]:
+    """Return outline and voids (n, 2) of a body seen from above; empty where they do not show.
+
+    A profile carried upwards shows itself; a body with faces its cut half-way up.
+    """
+    if isinstance(item, Mesh):
+        return [rows[:, :2] for rows in section_loops(item.moved(frame), axis=2)]
+    if isinstance(item, Curved):
+        return []
+    vx, vy, vz = frames.direction(frame, *item.vector)
+    if math.hypot(vx, vy) > 1e-6 * abs(vz) and abs(vz) < 0.2 * math.hypot(vx, vy):
+        return []
+    whole = frames.compose(frame, item.frame)
+    rings = []
+    for rows in item.profile.drawn.loops:
+        flat = outline.flattened(rows, chords=32)[:, :2]
+        rings.append(frames.images(whole, np.column_stack([flat, np.zeros(len(flat))]))[:, :2])
+    return rings if abs(_ring_area(rings[:1])) > 1e-6 else []
+
+
+def _area(corners: Corners) -> float:
+    return abs(_ring_area([np.array(corners)]))
+
+
+def _ring_area(rings: Sequence[Floats]) -> float:
+    """Area inside rings; voids run the other way round and count negative."""
+    total = 0.0
+    for ring in rings:
+        x, y = ring[:, 0] - ring[0, 0], ring[:, 1] - ring[0, 1]
+        total += float(0.5 * (x * np.roll(y, -1) - np.roll(x, -1) * y).sum())
+    return total
 
 
 def extent_of(points: Sequence[Vector]) -> Extent:

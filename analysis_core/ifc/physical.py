@@ -302,7 +302,8 @@ class _Reader:
         extent = self._extents.extent(shape.items, frame)
         if extent is None:
             raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
-        self._append(entity, ifc_class, extent, choice)
+        for piece in self._extents.pieces(shape.items, frame):
+            self._append(entity, ifc_class, piece, choice)
         return extent
 
     def _append(

@@ -660,3 +660,48 @@ def test_nothing_is_said_about_actions_here(tmp_path):
     action = ActionSetting("Q", Selector(), "uniform", (5000.0,))
 
     assert maker.read(tmp_path, Settings(actions=(action,))).actions == ()
+
+
+@pytest.mark.parametrize("as_faces", [False, True])
+def test_a_shaft_carries_by_its_walls_and_not_by_what_it_encloses(tmp_path, as_faces):
+    # A U-shaped core wall, 4 x 3 m, 250 thick, open to the right, turned by 20°.
+    maker = Maker()
+    ring = [(0, 0), (4000, 0), (4000, 250), (250, 250), (250, 2750), (4000, 2750), (4000, 3000),
+            (0, 3000)]  # fmt: skip
+    if as_faces:
+        count = len(ring)
+        points = [(x, y, z) for z in (0.0, 9000.0) for x, y in ring]
+        faces = [tuple(range(count - 1, -1, -1)), tuple(range(count, 2 * count))]
+        faces += [(i, (i + 1) % count, (i + 1) % count + count, i + count) for i in range(count)]
+        body = maker.brep(points, faces)
+    else:
+        body = maker.extrusion(maker.polygon(ring), 9000.0)
+    turn = math.radians(20.0)
+    wall = maker.element("IfcWall", "core", [body], z=(0, 0, 1),
+                         x=(math.cos(turn), math.sin(turn), 0))  # fmt: skip
+
+    pieces = maker.read(tmp_path).carriers
+
+    assert {p.global_id for p in pieces} == {wall.GlobalId}
+    assert len(pieces) == 3
+    areas = []
+    for piece in pieces:
+        x, y = np.array(piece.corners).T
+        areas.append(abs(0.5 * (x * np.roll(y, -1) - np.roll(x, -1) * y).sum()))
+    assert sum(areas) == pytest.approx(4.0 * 3.0 - 3.75 * 2.5)
+    assert {(p.bottom, p.top) for p in pieces} == {(0.0, 9.0)}
+
+
+def test_a_ring_of_walls_and_a_triangle(tmp_path):
+    maker = Maker()
+    outer = [(0, 0), (3000, 0), (3000, 3000), (0, 3000)]
+    inner = [(200, 200), (2800, 200), (2800, 2800), (200, 2800)]
+    shaft = maker.extrusion(maker.polygon(outer, voids=[inner]), 3000.0)
+    maker.element("IfcWall", "shaft", [shaft])
+    wedge = maker.extrusion(maker.polygon([(0, 0), (3000, 0), (0, 2000)]), 3000.0)
+    maker.element("IfcWall", "wedge", [wedge], at=(5000, 0, 0))
+
+    carriers = maker.read(tmp_path).carriers
+
+    assert [c.name for c in carriers].count("shaft") == 4
+    assert [c.name for c in carriers].count("wedge") == 1
