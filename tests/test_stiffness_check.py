@@ -222,15 +222,17 @@ def test_long_lines_are_solved_by_bands_and_agree():
 def test_band_factors_solve_what_needs_row_interchanges():
     rng = np.random.default_rng(11)
     size, width = 40, 3
-    full = rng.normal(size=(size, size))
-    full[np.abs(np.subtract.outer(np.arange(size), np.arange(size))) > width] = 0.0
-    np.fill_diagonal(full, 0.0)
-    row, column = np.nonzero(full)
-    right = rng.normal(size=(size, 2))
+    # Three matrices at once, nothing on their diagonals; each needs its own interchanges.
+    full = rng.normal(size=(3, size, size))
+    full[:, np.abs(np.subtract.outer(np.arange(size), np.arange(size))) > width] = 0.0
+    full[:, np.arange(size), np.arange(size)] = 0.0
+    row, column = np.nonzero(full[0])
+    right = rng.normal(size=(size, 2, 3))
 
-    found = BandedFactors(size, width, row, column, full[row, column]).solve(right)
+    found = BandedFactors(size, width, row, column, full[:, row, column].T).solve(right)
 
-    np.testing.assert_allclose(full @ found, right, atol=1e-10)
+    for index in range(3):
+        np.testing.assert_allclose(full[index] @ found[..., index], right[..., index], atol=1e-10)
 
 
 def test_a_couple_on_a_joint_that_nothing_keeps_from_turning_is_refused():

@@ -23,10 +23,8 @@ from analysis_core.stiffness_check.solution import (
 
 Floats = NDArray[np.float64]
 
-_TOGETHER = 120
-"""Lines with more unknowns than this are solved one by one."""
-_ENTRIES = 2_000_000
-"""Matrix entries of the lines that are solved together at most."""
+_NUMBERS = 1_500_000
+"""Entries of the lines that are solved together, at most: about what a cache holds."""
 _DOUBTFUL = 1e-11
 """A difference above this is looked at again with extended precision."""
 _NOTHING = 1e-8
@@ -63,19 +61,19 @@ def largest_differences(solutions: Sequence[LineSolution]) -> list[float]:
 
 
 def _parts(pattern: Pattern, places: list[int]) -> list[list[int]]:
-    size = max(1, numbering(pattern).size)
-    step = max(1, _ENTRIES // size**2)
+    numbers = numbering(pattern)
+    step = max(1, _NUMBERS // max(1, numbers.size * (3 * numbers.width + 1)))
     return [places[start : start + step] for start in range(0, len(places), step)]
 
 
 def _together(pattern: Pattern, solutions: Sequence[LineSolution]) -> list[float]:
-    solved = None
-    if numbering(pattern).size <= _TOGETHER:
-        solved = solve_group(
-            pattern,
-            [solution.line for solution in solutions],
-            [solution.cases for solution in solutions],
-        )
+    if len(solutions) == 1:
+        return [_alone(solutions[0])]
+    solved = solve_group(
+        pattern,
+        [solution.line for solution in solutions],
+        [solution.cases for solution in solutions],
+    )
     if solved is None:
         return [_alone(solution) for solution in solutions]
     values = _differences(solved, solutions).tolist()
@@ -97,7 +95,7 @@ def _alone(solution: LineSolution) -> float:
         unknowns = solve_alone(system)
     except (AnalysisError, SingularError):
         return math.inf
-    solved = spread(pattern, numbers, arrays, unknowns[None])
+    solved = spread(pattern, numbers, arrays, unknowns)
     return float(_differences(solved, [solution])[0])
 
 

@@ -123,9 +123,11 @@ class Numbering:
 
     ``loose``: movements that nothing resists and that move nothing else, taken as zero: the
     rotation of a joint whose member ends are all released, and the foot of a leg that slips.
+    No two unknowns that share an equation are further apart than ``width``.
     """
 
     size: int
+    width: int
     moment: Index
     axial: Index
     movement: Index
@@ -163,7 +165,18 @@ def numbering(pattern: Pattern) -> Numbering:
             axial[item] = place
         else:
             movement[item, part] = place
-    return Numbering(len(order), moment, axial, movement, tuple(loose))
+    width = _width(pattern, moment, axial, movement)
+    return Numbering(len(order), width, moment, axial, movement, tuple(loose))
+
+
+def _width(pattern: Pattern, moment: Index, axial: Index, movement: Index) -> int:
+    widest = 0
+    for index, ends in enumerate(pattern.ends):
+        moved = [int(place) for joint in ends for place in movement[joint] if place >= 0]
+        forces = [int(p) for p in (*moment[index], axial[index]) if p >= 0]
+        shared = moved + forces if forces else []
+        widest = max(widest, max(shared, default=0) - min(shared, default=0))
+    return widest
 
 
 def has_axial(pattern: Pattern, member: int) -> bool:

@@ -75,7 +75,7 @@ def solve_stiffness(line: Line, cases: Sequence[str]) -> LineSolution:
         raise _mechanism(line, tuple(range(len(line.joints)))) from error
     except ModelError as error:
         raise ModelError(f"Line {line.mark}: {error}") from error
-    return _as_solution(line, tuple(cases), spread(pattern, numbers, arrays, unknowns[None]))
+    return _as_solution(line, tuple(cases), spread(pattern, numbers, arrays, unknowns))
 
 
 def solve_group(
@@ -88,7 +88,7 @@ def solve_group(
         return None
     try:
         found = solve_together(equations(pattern, numbers, arrays))
-    except SingularError:
+    except (SingularError, ModelError):
         return None
     return spread(pattern, numbers, arrays, found)
 
