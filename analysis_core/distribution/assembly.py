@@ -10,15 +10,17 @@ from numpy.typing import NDArray
 from analysis_core.distribution.axial import forces
 from analysis_core.distribution.loads import Loads, gather, holds
 from analysis_core.distribution.mechanisms import refuse_idle_couples
-from analysis_core.distribution.recover import MemberForces, Movements, member_forces, movements
-from analysis_core.distribution.sway import balance
-from analysis_core.distribution.verify import (
-    continuity_residual,
-    joint_residual,
+from analysis_core.distribution.member_table import (
+    MemberTable,
+    joined_rotations,
+    member_table,
     own_rotations,
 )
+from analysis_core.distribution.recover import member_forces, movements
+from analysis_core.distribution.sway import balance
+from analysis_core.distribution.verify import continuity_residual, joint_residual
 from analysis_core.errors import ModelError
-from analysis_core.model import FREE, RIGID, Line
+from analysis_core.model import RIGID, Line
 from analysis_core.results import LineSolution
 
 Floats = NDArray[np.float64]
@@ -36,37 +38,15 @@ def solve_any(line: Line, cases: Sequence[str]) -> LineSolution:
         raise ModelError(f"Line {line.mark} is not analysed: {line.fault}")
     refuse_idle_couples(line, cases)
     loads = gather(line, cases)
+    table = member_table(line)
     balanced = balance(line, loads)
     found = forces(line, loads, balanced)
-    ends = member_forces(line, loads, balanced, found)
+    ends = member_forces(line, loads, table, balanced, found)
     moved = movements(line, loads, balanced, ends.moments)
-    reactions = np.zeros((len(line.joints), 3, len(cases)))
-    reactions[:, :2] = found.reactions
-    reactions[:, 2] = _couples(line, loads, ends, moved)
-    method = SWAY if len(balanced.sizes) else TREE
-    return assembled(line, cases, loads, ends, moved, reactions, method)
-
-
-def assembled(
-    line: Line,
-    cases: Sequence[str],
-    loads: Loads,
-    ends: MemberForces,
-    moved: Movements,
-    reactions: Floats,
-    method: str,
-) -> LineSolution:
-    """Turn arrays with the case last into a verified LineSolution."""
-    rotations = ends.moments * 0.0
-    for member in line.members:
-        own = own_rotations(line, loads, member.id, ends.moments, moved.displacements)
-        for index, (joint, spring) in enumerate(
-            ((member.start, member.start_spring), (member.end, member.end_spring))
-        ):
-            joined = moved.rotations[joint] - (
-                0.0 if spring == FREE else ends.moments[member.id, index] / spring
-            )
-            rotations[member.id, index] = own[index] if spring == FREE else joined
+    own = own_rotations(table, loads.members[:, 2:4], ends.moments, moved.displacements)
+    joined = joined_rotations(table, moved.rotations, ends.moments)
+    couples = _couples(line, loads, table, ends.moments, moved.rotations)
+    reactions = np.concatenate([found.reactions, couples[:, None]], axis=1)
     return LineSolution(
         line=line,
         cases=tuple(cases),
@@ -74,16 +54,14 @@ def assembled(
         end_shears=_case_first(ends.shears),
         axial=_case_first(ends.axial),
         rotations=_case_first(moved.rotations),
-        end_rotations=_case_first(rotations),
+        end_rotations=_case_first(np.where(table.released.T[:, :, None], own, joined)),
         displacements=_case_first(moved.displacements),
         reactions=_case_first(reactions),
         joint_residual=joint_residual(
-            line, cases, ends.moments, ends.shears, ends.axial, reactions
+            line, cases, table, ends.moments, ends.shears, ends.axial, reactions
         ),
-        continuity_residual=continuity_residual(
-            line, loads, ends.moments, moved.rotations, moved.displacements
-        ),
-        method=method,
+        continuity_residual=continuity_residual(table, own, joined),
+        method=SWAY if len(balanced.sizes) else TREE,
     )
 
 
@@ -93,18 +71,15 @@ def _case_first(array: Floats) -> Floats:
     return turned
 
 
-def _couples(line: Line, loads: Loads, ends: MemberForces, moved: Movements) -> Floats:
+def _couples(
+    line: Line, loads: Loads, table: MemberTable, moments: Floats, rotations: Floats
+) -> Floats:
     """Reaction couples (J, C): by the spring, or by equilibrium where the support is rigid."""
-    couples = np.zeros((len(line.joints), loads.forces.shape[2]))
-    for joint in line.joints:
-        stiffness = holds(joint)["rotation"]
-        if stiffness == RIGID:
-            couples[joint.id] = -loads.forces[joint.id, 2]
-        elif stiffness:
-            give = moved.rotations[joint.id] - loads.movements[joint.id, 2]
-            couples[joint.id] = -stiffness * give
-    for member in line.members:
-        for index, joint_id in enumerate((member.start, member.end)):
-            if holds(line.joints[joint_id])["rotation"] == RIGID:
-                couples[joint_id] += ends.moments[member.id, index]
-    return couples
+    stiffness = np.array([holds(joint)["rotation"] for joint in line.joints])[:, None]
+    if not stiffness.any():
+        return np.zeros_like(rotations)
+    rigid = stiffness == RIGID
+    needed = -loads.forces[:, 2]
+    np.add.at(needed, table.joints.T, moments)
+    springs = np.where(rigid, 0.0, stiffness) * (loads.movements[:, 2] - rotations)
+    return np.where(rigid, needed, springs)

@@ -13,7 +13,6 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.distribution.bars import Bar
 from analysis_core.distribution.loads import Loads, holds
 from analysis_core.distribution.sway import Balanced
 from analysis_core.distribution.translations import held_horizontally
@@ -41,8 +40,8 @@ def forces(line: Line, loads: Loads, balanced: Balanced) -> Forces:
     tail_axial = balanced.frame.tails.axial
     count = len(balanced.reduction.bars)
     pushes = np.array(balanced.forces[:, :2])
-    for index, bar in enumerate(balanced.bars[:count]):
-        across = _local_down(bar)[:, None]
+    for index, bar in enumerate(balanced.reduction.bars):
+        across = balanced.frame.table.down[index][:, None]
         pushes[bar.start] += across * shears[index, 0]
         pushes[bar.end] -= across * shears[index, 1]
     reactions = _spring_reactions(line, loads, balanced)
@@ -66,16 +65,6 @@ def bar_shears(balanced: Balanced) -> Floats:
     return shears
 
 
-def _local_down(bar: Bar) -> Floats:
-    cosine, sine = bar.direction
-    return np.array([sine, cosine])
-
-
-def _along(bar: Bar) -> Floats:
-    cosine, sine = bar.direction
-    return np.array([cosine, -sine])
-
-
 def _spring_reactions(line: Line, loads: Loads, balanced: Balanced) -> Floats:
     reactions = np.zeros((len(line.joints), 2, loads.forces.shape[2]))
     for joint in balanced.reduction.joints:
@@ -94,23 +83,11 @@ def _spread_along(line: Line, balanced: Balanced, pushes: Floats, reactions: Flo
     The bars form a truss whose joints are loaded by ``pushes`` (J, 2, C), N to the right and
     down; the independent translations are held (nothing is left over along them).
     """
-    bars, joints = balanced.reduction.bars, balanced.reduction.joints
+    joints = balanced.reduction.joints
     held = _held(line, balanced)
-    place = {j: i for i, j in enumerate((j, d) for j in joints for d in (0, 1))}
-    stiffness = np.zeros((len(place), len(place)))
-    load = np.array([pushes[j, d] for j, d in place]).reshape(len(place), pushes.shape[2])
-    for index, bar in enumerate(bars):
-        actions = balanced.actions[index]
-        rows = [place[bar.start, 0], place[bar.start, 1], place[bar.end, 0], place[bar.end, 1]]
-        if bar.slides is not None:
-            foot = rows[2:] if bar.slides == 0 else rows[:2]
-            load[foot] += _along(bar)[:, None] * actions.axial
-            continue
-        unit = np.concatenate([-_along(bar), _along(bar)])
-        stiffness[np.ix_(rows, rows)] += np.outer(unit, unit) / bar.length
-        pull = actions.axial_lever / bar.length
-        load[rows[:2]] += np.outer(_along(bar), pull)
-        load[rows[2:]] += np.outer(_along(bar), actions.axial - pull)
+    place = {item: i for i, item in enumerate((j, d) for j in joints for d in (0, 1))}
+    load = pushes[list(joints)].reshape(len(place), -1)
+    stiffness = _truss(balanced, load)
     free = [i for item, i in place.items() if item not in held]
     moved = np.zeros_like(load)
     if free and load[free].any():
@@ -119,7 +96,34 @@ def _spread_along(line: Line, balanced: Balanced, pushes: Floats, reactions: Flo
     for (joint, direction), index in place.items():
         if (joint, direction) in held and (joint, direction) not in balanced.frame.moves.anchors:
             reactions[joint, direction] += left[index] if direction == 0 else -left[index]
-    return _bar_forces(balanced, place, moved)
+    return _bar_forces(balanced, moved.reshape(len(joints), 2, -1))
+
+
+def _truss(balanced: Balanced, load: Floats) -> Floats:
+    """Stiffness of the bars as a truss with EA = 1; their axial actions are added to ``load``."""
+    table, bars = balanced.frame.table, balanced.reduction.bars
+    stiffness = np.zeros((len(load), len(load)))
+    if not bars:
+        return stiffness
+    rows = np.concatenate([2 * table.places[[0, 0]], 2 * table.places[[1, 1]]])
+    rows[[1, 3]] += 1
+    rows = rows.T
+    fast = np.array([bar.slides is None for bar in bars])
+    unit = np.concatenate([-table.along, table.along], axis=1)[fast]
+    length = table.length.astype(np.float64)
+    block = unit[:, :, None] * (unit / length[fast, None])[:, None, :]
+    np.add.at(stiffness, (rows[fast][:, :, None], rows[fast][:, None, :]), block)
+    axial = np.array([actions.axial for actions in balanced.frame.actions])
+    if axial.any():
+        lever = np.array([actions.axial_lever for actions in balanced.frame.actions])
+        at_start = lever / length[:, None]
+        for index, bar in enumerate(bars):
+            if bar.slides is not None:  # the foot takes it all
+                at_start[index] = 0.0 if bar.slides == 0 else axial[index]
+        along = table.along[:, :, None]
+        np.add.at(load, rows[:, :2], along * at_start[:, None])
+        np.add.at(load, rows[:, 2:], along * (axial - at_start)[:, None])
+    return stiffness
 
 
 def _held(line: Line, balanced: Balanced) -> set[tuple[int, int]]:
@@ -135,20 +139,16 @@ def _held(line: Line, balanced: Balanced) -> set[tuple[int, int]]:
     return held | set(balanced.frame.moves.anchors)
 
 
-def _bar_forces(balanced: Balanced, place: dict[tuple[int, int], int], moved: Floats) -> Floats:
-    axial = np.zeros((len(balanced.reduction.bars), 2, moved.shape[1]))
-    for index, bar in enumerate(balanced.reduction.bars):
-        actions = balanced.actions[index]
-        if bar.slides == 0:
-            axial[index, 1] = -actions.axial
-            continue
-        if bar.slides == 1:
-            axial[index, 0] = actions.axial
-            continue
-        unit = _along(bar)
-        start = moved[[place[bar.start, 0], place[bar.start, 1]]]
-        end = moved[[place[bar.end, 0], place[bar.end, 1]]]
-        stretch = (unit[:, None] * (end - start)).sum(0)
-        axial[index, 0] = (stretch + actions.axial_lever) / bar.length
-        axial[index, 1] = axial[index, 0] - actions.axial
-    return axial
+def _bar_forces(balanced: Balanced, moved: Floats) -> Floats:
+    """Axial forces (B', 2, C) of the bars whose joints the truss moves by ``moved`` (n, 2, C)."""
+    table, bars = balanced.frame.table, balanced.reduction.bars
+    apart = moved[table.places[1]] - moved[table.places[0]]
+    stretch = (table.along[:, :, None] * apart).sum(1)
+    total = np.array([actions.axial for actions in balanced.frame.actions])
+    lever = np.array([actions.axial_lever for actions in balanced.frame.actions])
+    total, lever = total.reshape(stretch.shape), lever.reshape(stretch.shape)
+    start = (stretch + lever) / table.length.astype(np.float64)[:, None]
+    for index, bar in enumerate(bars):
+        if bar.slides is not None:
+            start[index] = 0.0 if bar.slides == 0 else total[index]
+    return np.stack([start, start - total], axis=1)

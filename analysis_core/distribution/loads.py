@@ -35,25 +35,48 @@ def gather(line: Line, cases: Sequence[str]) -> Loads:
     Raises ModelError for a movement that no support could impose.
     """
     column = {name: index for index, name in enumerate(cases)}
-    members = np.zeros((len(line.members), len(EndActions._fields), len(cases)))
-    joints = np.zeros((2, len(line.joints), 3, len(cases)))
+    on_members, forces, movements = _Sum(EndActions._fields), _Sum("xzr"), _Sum("xzr")
     for action in line.actions:
         case = column.get(action.case)
         if case is None:
             continue
         if isinstance(action, JointForce):
-            joints[0, action.joint, :, case] += (action.horizontal, action.vertical, action.moment)
+            parts = (action.horizontal, action.vertical, action.moment)
+            forces.add(action.joint, case, parts)
         elif isinstance(action, JointMovement):
             check_movement(line, action)
-            joints[1, action.joint, :, case] += (
-                action.horizontal,
-                action.vertical,
-                action.rotation,
-            )
+            parts = (action.horizontal, action.vertical, action.rotation)
+            movements.add(action.joint, case, parts)
         else:
             found = end_actions(line.members[action.member], action)
-            members[action.member, :, case] += found
-    return Loads(members, joints[0], joints[1])
+            on_members.add(action.member, case, found)
+    count = len(line.joints)
+    return Loads(
+        on_members.table(len(line.members), len(cases)),
+        forces.table(count, len(cases)),
+        movements.table(count, len(cases)),
+    )
+
+
+class _Sum:
+    """Sums rows of values by place and case."""
+
+    def __init__(self, fields: Sequence[str]) -> None:
+        self._width = len(fields)
+        self._places: list[tuple[int, int]] = []
+        self._rows: list[tuple[float, ...]] = []
+
+    def add(self, place: int, case: int, row: tuple[float, ...]) -> None:
+        self._places.append((place, case))
+        self._rows.append(row)
+
+    def table(self, places: int, cases: int) -> Floats:
+        """Return the sums as (places, fields, cases)."""
+        total = np.zeros((places, cases, self._width))
+        if self._rows:
+            at, case = np.array(self._places).T
+            np.add.at(total, (at, case), np.array(self._rows))
+        return np.ascontiguousarray(total.transpose(0, 2, 1))
 
 
 def check_movement(line: Line, action: JointMovement) -> None:

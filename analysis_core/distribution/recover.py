@@ -11,6 +11,7 @@ from analysis_core.distribution.axial import Forces
 from analysis_core.distribution.bar_actions import member_moments
 from analysis_core.distribution.bars import Bar
 from analysis_core.distribution.loads import Loads
+from analysis_core.distribution.member_table import MemberTable
 from analysis_core.distribution.stiffness_factors import (
     elastic_weights,
     end_rotations,
@@ -33,46 +34,37 @@ class MemberForces:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Movements:
-    """Movements of J joints and of the members' own ends.
-
-    rotations (J, C) rad, displacements (J, 2, C) m right and down, end_rotations (M, 2, C) rad.
-    """
+    """Movements of J joints: rotations (J, C) rad, displacements (J, 2, C) m right and down."""
 
     rotations: Floats
     displacements: Floats
-    end_rotations: Floats
 
 
-def member_forces(line: Line, loads: Loads, balanced: Balanced, found: Forces) -> MemberForces:
+def member_forces(
+    line: Line, loads: Loads, table: MemberTable, balanced: Balanced, found: Forces
+) -> MemberForces:
     """Spread the end forces of the bars over their members."""
     shape = (len(line.members), 2, loads.forces.shape[2])
-    moments, shears, axial = np.zeros(shape), np.zeros(shape), np.zeros(shape)
+    moments, pulls = np.zeros(shape), np.zeros((shape[0], shape[2]))
     for index, bar in enumerate(balanced.bars):
         rows = list(bar.members)
         moments[rows] = member_moments(bar, balanced.actions[index], *balanced.moments[index])
-        _empty_releases(line, bar, moments)
-        cosine, sine = bar.direction
         pull = found.axial[index, 0]
         for number in bar.members:
-            member, own = line.members[number], loads.members[number]
-            lean = moments[number].sum(0) / member.length
-            shears[number] = own[4] - lean, -own[5] - lean
-            axial[number] = pull, pull - own[6]
-            right, down, _ = loads.forces[member.end]
-            pull = axial[number, 1] - (right * cosine - down * sine)
-    return MemberForces(moments, shears, axial)
-
-
-def _empty_releases(line: Line, bar: Bar, moments: Floats) -> None:
-    for number in bar.members:
-        member = line.members[number]
-        for end, spring in enumerate((member.start_spring, member.end_spring)):
-            if spring == FREE:
-                moments[number, end] = 0.0
+            pulls[number] = pull
+            if number != bar.members[-1]:
+                right, down = loads.forces[line.members[number].end, :2]
+                along = right * bar.direction[0] - down * bar.direction[1]
+                pull = pull - loads.members[number, 6] - along
+    moments[table.released.T] = 0.0
+    lean = moments.sum(1) / table.length[:, None]
+    own = loads.members
+    shears = np.stack([own[:, 4] - lean, -own[:, 5] - lean], axis=1)
+    return MemberForces(moments, shears, np.stack([pulls, pulls - own[:, 6]], axis=1))
 
 
 def movements(line: Line, loads: Loads, balanced: Balanced, moments: Floats) -> Movements:
-    """Return the movements of every joint and member end, from those of the released joints.
+    """Return the movements of every joint, from those of the joints that were released.
 
     Inside bars and along tails they follow member by member from the flexibility side.
     """
@@ -81,10 +73,12 @@ def movements(line: Line, loads: Loads, balanced: Balanced, moments: Floats) -> 
     ends = np.zeros((len(line.members), 2, loads.forces.shape[2]))
     count = len(balanced.reduction.bars)
     for bar in balanced.bars[:count]:
+        if len(bar.members) == 1:
+            continue  # its joints are known already
         _Walk(line, loads, bar, moments, turns, shifts, ends).between()
     for bar, root in reversed(balanced.reduction.tails):
         _Walk(line, loads, bar, moments, turns, shifts, ends).outwards(bar.start == root)
-    return Movements(turns, shifts, ends)
+    return Movements(turns, shifts)
 
 
 class _Walk:

@@ -14,12 +14,12 @@ rings of bars are released one after the other with the rest kept free: eliminat
 
 from __future__ import annotations
 
-from collections.abc import Collection, Sequence
+from collections.abc import Collection
 from dataclasses import dataclass
 
 import numpy as np
 
-from analysis_core.distribution.bars import Bar
+from analysis_core.distribution.bar_table import BarTable
 from analysis_core.distribution.linear import Long, solve_symmetric
 
 CLAMP = 1e200
@@ -43,30 +43,25 @@ class Released:
 
 
 def release(
-    bars: Sequence[Bar],
-    joints: Sequence[int],
-    support: Long,
-    held: Long,
-    couples: Long,
-    fastened: Collection[int] = (),
+    table: BarTable, support: Long, held: Long, couples: Long, fastened: Collection[int] = ()
 ) -> Released:
     """Release every joint once, so that all moments balance.
 
-    ``joints`` (n): joint ids; ``support`` (n): rotational stiffness of their supports; ``held``
-    (B, 2, c): end moments of the bars with all joints held; ``couples`` (n, c): applied to the
-    joints, N·m.  ``fastened`` joints have a bar that turns with them.
+    ``support`` (n): rotational stiffness of the supports of the joints; ``held`` (B, 2, c): end
+    moments of the bars with all joints held; ``couples`` (n, c): applied to the joints, N·m.
+    ``fastened``: places of joints that have a bar that turns with them.
     """
-    work = _Work(bars, joints, support, held, couples)
+    work = _Work(table, support, held, couples)
     releases = work.release_trees()
     outer = {release.outer for release in releases}
-    core = [index for index in range(len(joints)) if index not in outer]
+    core = [index for index in range(len(support)) if index not in outer]
     loose = [index for index in core if not work.meeting[index] and not work.stiff[index] > 0]
     loose += [release.outer for release in releases if not release.total > 0]
     solution, weakest = work.release_core(core)
     moments = _ring_moments(work, held, solution)
     for released in reversed(releases):
         _follow(work, released, held, solution, moments)
-    if any(joints[index] in fastened for index in loose):
+    if any(index in fastened for index in loose):
         weakest = 0.0
     return Released(solution, moments, weakest)
 
@@ -91,18 +86,17 @@ class _Release:
 class _Work:
     """Joints by place: ``stiff`` and ``moments`` grow as outer joints are released into them."""
 
-    def __init__(
-        self, bars: Sequence[Bar], joints: Sequence[int], support: Long, held: Long, couples: Long
-    ) -> None:
-        self.bars, self.held = bars, held
-        self.place = {joint: index for index, joint in enumerate(joints)}
-        self.stiff = [np.longdouble(value) for value in support]
+    def __init__(self, table: BarTable, support: Long, held: Long, couples: Long) -> None:
+        self.table, self.held = table, held
+        self.starts, self.ends = table.places.tolist()
+        self.stiff = list(support)
         self.moments = -np.asarray(couples, dtype=np.longdouble)
-        self.meeting: list[list[int]] = [[] for _ in joints]
-        for index, bar in enumerate(bars):
-            for side, joint in enumerate((bar.start, bar.end)):
-                self.meeting[self.place[joint]].append(index)
-                self.moments[self.place[joint]] += held[index, side]
+        self.meeting: list[list[int]] = [[] for _ in support]
+        for index, (start, end) in enumerate(zip(self.starts, self.ends, strict=True)):
+            self.meeting[start].append(index)
+            self.meeting[end].append(index)
+            self.moments[start] += held[index, 0]
+            self.moments[end] += held[index, 1]
 
     def release_trees(self) -> list[_Release]:
         """Release joints at which one bar is left, outermost first."""
@@ -118,23 +112,24 @@ class _Work:
         return releases
 
     def _release_outer(self, outer: int) -> _Release:
-        number = self.meeting[outer].pop()
-        bar = self.bars[number]
-        side = 0 if self.place[bar.start] == outer else 1
-        inner = self.place[bar.start] + self.place[bar.end] - outer
-        self.meeting[inner].remove(number)
-        ends = bar.stiffness
-        near, far = (ends.near, ends.far) if side else (ends.far, ends.near)
+        bar = self.meeting[outer].pop()
+        table = self.table
+        side = 0 if self.starts[bar] == outer else 1
+        inner = self.starts[bar] + self.ends[bar] - outer
+        self.meeting[inner].remove(bar)
+        near, far = table.near[bar], table.far[bar]
+        if side == 0:
+            near, far = far, near
         total = self.stiff[outer] + far
-        moment = self.held[number, 1 - side]
-        modified = np.longdouble(near)
+        moment = self.held[bar, 1 - side]
+        modified = near
         if total > 0:
-            modified = np.longdouble((ends.both + near * self.stiff[outer]) / total)
-            passed = ends.carried / total * self.moments[outer]
+            modified = (table.both[bar] + near * self.stiff[outer]) / total
+            passed = table.carried[bar] / total * self.moments[outer]
             moment = moment - passed
             self.moments[inner] -= passed
         self.stiff[inner] += modified
-        return _Release(number, outer, inner, side, total, modified, moment)
+        return _Release(bar, outer, inner, side, total, modified, moment)
 
     def release_core(self, core: list[int]) -> tuple[Long, float]:
         """Release the joints that trees left over: single ones, and those on rings."""
@@ -142,12 +137,11 @@ class _Work:
         matrix = np.zeros((len(core), len(core)), dtype=np.longdouble)
         for row, index in enumerate(core):
             matrix[row, row] += self.stiff[index]
-            for number in self.meeting[index]:
-                bar = self.bars[number]
-                at_start = self.place[bar.start] == index
-                other = position[self.place[bar.end if at_start else bar.start]]
-                matrix[row, row] += bar.stiffness.near if at_start else bar.stiffness.far
-                matrix[row, other] += bar.stiffness.carried
+            for bar in self.meeting[index]:
+                at_start = self.starts[bar] == index
+                other = position[self.ends[bar] if at_start else self.starts[bar]]
+                matrix[row, row] += self.table.near[bar] if at_start else self.table.far[bar]
+                matrix[row, other] += self.table.carried[bar]
         solution = np.zeros_like(self.moments)
         sizes = matrix.diagonal().copy()
         solution[core], weakest = solve_symmetric(matrix, -self.moments[core], sizes)
@@ -155,14 +149,12 @@ class _Work:
 
 
 def _ring_moments(work: _Work, held: Long, solution: Long) -> Long:
-    moments = np.array(held, dtype=np.longdouble)
-    for number in {number for met in work.meeting for number in met}:
-        bar = work.bars[number]
-        ends = bar.stiffness
-        start, end = solution[work.place[bar.start]], solution[work.place[bar.end]]
-        moments[number, 0] += ends.near * start + ends.carried * end
-        moments[number, 1] += ends.carried * start + ends.far * end
-    return moments
+    """Moments (B, 2, c) of all bars by the rotations of their ends; right for those on rings."""
+    table = work.table
+    start, end = solution[table.places[0]], solution[table.places[1]]
+    near, far, carried = (k[:, None] for k in (table.near, table.far, table.carried))
+    turned = np.stack([near * start + carried * end, carried * start + far * end], axis=1)
+    return np.asarray(held + turned)
 
 
 def _follow(work: _Work, released: _Release, held: Long, solution: Long, moments: Long) -> None:
@@ -175,7 +167,7 @@ def _follow(work: _Work, released: _Release, held: Long, solution: Long, moments
     unbalance = work.moments[released.outer]
     turn = np.zeros_like(unbalance)
     if released.total > 0:
-        carried = work.bars[bar].stiffness.carried * solution[released.inner]
+        carried = work.table.carried[bar] * solution[released.inner]
         turn = -(unbalance + carried) / released.total
     solution[released.outer] = turn
     moments[bar, 1 - side] = released.moment + released.modified * solution[released.inner]

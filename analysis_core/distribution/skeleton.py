@@ -3,17 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.distribution.bar_actions import BarActions, bar_actions
+from analysis_core.distribution.bar_table import BarTable, bar_table
 from analysis_core.distribution.bars import Bar, Reduction, reduce
 from analysis_core.distribution.linear import Long, solve_symmetric
 from analysis_core.distribution.loads import Loads, holds
 from analysis_core.distribution.release import CLAMP
-from analysis_core.distribution.stiffness_factors import extended
 from analysis_core.distribution.tails import Tails, take_off
 from analysis_core.distribution.translations import Translations, independent_translations
 from analysis_core.model import RIGID, Line
@@ -25,7 +25,7 @@ Floats = NDArray[np.float64]
 class Skeleton:
     """B bars that are not tails, n joints to release, C cases, m independent translations.
 
-    ``bars`` have their stiffness in extended precision.  unit (B, m): clockwise rotation of the
+    unit (B, m): clockwise rotation of the
     bars' chords per metre of each translation; held (B, 2, C + m): end moments with all joints
     held, by actions and prescribed movements, then per metre of each translation.  turned (n, C)
     rad: rotations that rigid supports are prescribed; couples (n, C) N·m: on the joints, those
@@ -35,7 +35,7 @@ class Skeleton:
     line: Line
     loads: Loads
     reduction: Reduction
-    bars: tuple[Bar, ...]
+    table: BarTable
     actions: tuple[BarActions, ...]
     tails: Tails
     moves: Translations
@@ -43,6 +43,11 @@ class Skeleton:
     held: Long
     turned: Floats
     couples: Floats
+
+    @property
+    def bars(self) -> tuple[Bar, ...]:
+        """The bars that are not tails."""
+        return self.reduction.bars
 
     @property
     def joints(self) -> tuple[int, ...]:
@@ -64,21 +69,22 @@ def skeleton(line: Line, loads: Loads) -> Skeleton:
     tails = take_off(line, reduction, loads)
     actions = tuple(bar_actions(line, bar, loads) for bar in reduction.bars)
     moves = independent_translations(line, reduction.bars, reduction.joints, loads)
-    bars = tuple(replace(bar, stiffness=extended(bar.stiffness)) for bar in reduction.bars)
-    given = _chord_rotations(bars, moves.given)
-    unit = _chord_rotations(bars, moves.modes.transpose(1, 2, 0))
-    held = np.concatenate([_moved(bars, given), _moved(bars, unit)], axis=2)
+    table = bar_table(reduction)
+    joints = list(reduction.joints)
+    given = _chord_rotations(table, moves.given[joints])
+    unit = _chord_rotations(table, moves.modes[:, joints].transpose(1, 2, 0))
+    held = np.concatenate([_moved(table, given), _moved(table, unit)], axis=2)
     for index, own in enumerate(actions):
         held[index, :, : given.shape[1]] += own.moments
-    joints = list(reduction.joints)
     support = support_stiffness(line, joints)[:, None]
     ground = loads.movements[joints, 2]
     turned = np.where(support == CLAMP, ground, 0.0)
-    _turn_supports(bars, joints, turned, held)
+    if turned.any():
+        held[..., : turned.shape[1]] += _by_turned_supports(table, turned)
     springs = np.where(support == CLAMP, 0.0, support).astype(np.float64)
     couples = tails.forces[joints, 2] + springs * ground
     return Skeleton(
-        line, loads, reduction, bars, actions, tails, moves, unit, held, turned, couples
+        line, loads, reduction, table, actions, tails, moves, unit, held, turned, couples
     )
 
 
@@ -88,15 +94,11 @@ def support_stiffness(line: Line, joints: Sequence[int]) -> Long:
     return np.array([CLAMP if k == RIGID else k for k in found], dtype=np.longdouble)
 
 
-def _turn_supports(bars: Sequence[Bar], joints: Sequence[int], turned: Floats, held: Long) -> None:
-    """Add to the held moments what supports do that are turned by ``turned`` (n, C)."""
-    if not turned.any():
-        return
-    place = {joint: index for index, joint in enumerate(joints)}
-    for index, bar in enumerate(bars):
-        start, end, ends = turned[place[bar.start]], turned[place[bar.end]], bar.stiffness
-        held[index, 0, : turned.shape[1]] += ends.near * start + ends.carried * end
-        held[index, 1, : turned.shape[1]] += ends.carried * start + ends.far * end
+def _by_turned_supports(table: BarTable, turned: Floats) -> Long:
+    """Moments (B, 2, C) in bars whose rigid supports are turned by ``turned`` (n, C)."""
+    start, end = turned[table.places[0]], turned[table.places[1]]
+    near, far, carried = (k[:, None] for k in (table.near, table.far, table.carried))
+    return np.stack([near * start + carried * end, carried * start + far * end], axis=1)
 
 
 def translation_sizes(frame: Skeleton, locked: Long, swayed: Long) -> tuple[Long, float]:
@@ -111,8 +113,7 @@ def translation_sizes(frame: Skeleton, locked: Long, swayed: Long) -> tuple[Long
     resistance = -(swayed.sum(1)[:, None, :] * unit[:, :, None]).sum(0)
     most = -(frame.held[..., frame.cases :].sum(1) * unit).sum(0)
     work = (locked.sum(1)[:, None, :] * unit[:, :, None]).sum(0)
-    for bar, actions in zip(frame.bars, frame.actions, strict=True):
-        work += _work_of_actions(bar, actions, modes)
+    work += _work_of_actions(frame)
     for joint in frame.joints:
         stiffness = holds(frame.line.joints[joint])
         for direction, key in enumerate(("horizontal", "vertical")):
@@ -136,33 +137,35 @@ def times(per_unit: Long, sizes: Long) -> Long:
     return total
 
 
-def _chord_rotations(bars: Sequence[Bar], shifts: Floats) -> Long:
-    """Clockwise rotations (B, c) of the bars' chords for joint movements (J, 2, c)."""
-    turns = np.zeros((len(bars), shifts.shape[2]), dtype=np.longdouble)
-    for index, bar in enumerate(bars):
-        cosine, sine = bar.direction
-        across = shifts[bar.end].astype(np.longdouble) - shifts[bar.start]
-        turns[index] = (across[0] * sine + across[1] * cosine) / bar.length
-    return turns
+def _chord_rotations(table: BarTable, shifts: Floats) -> Long:
+    """Clockwise rotations (B, c) of the bars' chords for movements (n, 2, c) of the joints."""
+    moved = shifts.astype(np.longdouble)
+    apart = moved[table.places[1]] - moved[table.places[0]]
+    return np.asarray((apart * table.down[:, :, None]).sum(1) / table.length[:, None])
 
 
-def _moved(bars: Sequence[Bar], chords: Long) -> Long:
+def _moved(table: BarTable, chords: Long) -> Long:
     """End moments (B, 2, c) of bars whose joints move but do not turn."""
-    moments = np.zeros((len(bars), 2, chords.shape[1]), dtype=np.longdouble)
-    for index, bar in enumerate(bars):
-        ends = bar.stiffness
-        lever = -chords[index] * ends.length * ends.sway
-        moments[index] = lever * ends.centre, lever * (ends.length - ends.centre)
-    return moments
+    lever = -chords * (table.length * table.sway)[:, None]
+    other = table.length - table.centre
+    return np.stack([lever * table.centre[:, None], lever * other[:, None]], axis=1)
 
 
-def _work_of_actions(bar: Bar, actions: BarActions, modes: Floats) -> Long:
-    """Work (m, C) of the actions on a bar, taken as a simple beam, along each mode."""
-    cosine, sine = bar.direction
-    start, end = modes[:, bar.start], modes[:, bar.end]
-    across = [shift[:, 0] * sine + shift[:, 1] * cosine for shift in (start, end)]
-    holding = end if bar.slides == 0 else start
-    along = holding[:, 0] * cosine - holding[:, 1] * sine
-    total = np.multiply.outer(across[0], actions.forces[0])
-    total = total + np.multiply.outer(across[1], actions.forces[1])
-    return np.asarray(total + np.multiply.outer(along, actions.axial), dtype=np.longdouble)
+def _work_of_actions(frame: Skeleton) -> Long:
+    """Work (m, C) of the actions on bars, taken as simple beams, along each mode."""
+    table, joints = frame.table, list(frame.joints)
+    modes = frame.moves.modes[:, joints].astype(np.longdouble)
+    start, end = modes[:, table.places[0]], modes[:, table.places[1]]
+    holds_end = np.array([bar.slides == 0 for bar in frame.bars])
+    holding = np.where(holds_end[None, :, None], end, start)
+    work = np.zeros((len(modes), frame.cases), dtype=np.longdouble)
+    for index, actions in enumerate(frame.actions):
+        down, along = table.down[index], table.along[index]
+        for shift, force in (
+            ((start[:, index] * down).sum(1), actions.forces[0]),
+            ((end[:, index] * down).sum(1), actions.forces[1]),
+            ((holding[:, index] * along).sum(1), actions.axial),
+        ):
+            if force.any():
+                work += np.multiply.outer(shift, force)
+    return work

@@ -155,17 +155,6 @@ def with_point_weights(
     return _from_analogy(weights.length, 0.0, hinges[0], 1.0 / about_hinge)
 
 
-def extended(ends: EndStiffness) -> EndStiffness:
-    """Return the same end stiffness in extended precision.
-
-    Recomputed from turn, centre and sway, so that a rotation as a whole costs no moment.
-    """
-    length, turn, centre, sway = (
-        np.longdouble(value) for value in (ends.length, ends.turn, ends.centre, ends.sway)
-    )
-    return _from_analogy(length, turn, centre, sway)  # type: ignore[arg-type]
-
-
 def in_a_row(parts: Iterable[ElasticWeights]) -> ElasticWeights:
     """Return the elastic weights of stretches laid one after the other."""
     length = total = centre = spread = slip = 0.0

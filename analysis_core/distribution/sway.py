@@ -110,15 +110,16 @@ def _release(frame: Skeleton) -> Released:
     """Balance the moments of all cases and of all translations."""
     couples = np.zeros((len(frame.joints), frame.held.shape[2]), dtype=np.longdouble)
     couples[:, : frame.cases] = frame.couples
+    place = {joint: index for index, joint in enumerate(frame.joints)}
     fastened = {
-        joint
+        place[joint]
         for bar in frame.bars
         for joint, loose in zip((bar.start, bar.end), bar.released, strict=True)
         if not loose
     }
-    fastened |= {root for _, root in frame.reduction.tails}
+    fastened |= {place[root] for _, root in frame.reduction.tails if root in place}
     support = support_stiffness(frame.line, frame.joints)
-    return release(frame.bars, frame.joints, support, frame.held, couples, fastened)
+    return release(frame.table, support, frame.held, couples, fastened)
 
 
 def _exact_hinges(frame: Skeleton, moments: Long) -> Long:

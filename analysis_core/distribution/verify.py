@@ -1,8 +1,8 @@
 """What every solution proves of itself, from the end forces alone.
 
-* Joints: the forces and couples that members, actions and supports put on every joint add up to
-  nothing, and so do all actions and reactions on the line as a whole.  The resultants of the
-  actions are summed afresh here.
+* Equilibrium: the forces and couples that members, actions and supports put on every joint add
+  up to nothing; so do those on every member, with the resultants of its actions summed afresh.
+  With every part in equilibrium the whole is.
 * Continuity: the rotation that each member end has by its own end moments and actions (the
   flexibility side) is the rotation of its joint.
 """
@@ -14,17 +14,8 @@ from collections.abc import Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.distribution.loads import Loads
-from analysis_core.distribution.stiffness_factors import elastic_weights, inverse
-from analysis_core.model import (
-    FREE,
-    Action,
-    DistributedForce,
-    JointForce,
-    Line,
-    PointForce,
-    PointMoment,
-)
+from analysis_core.distribution.member_table import MemberTable
+from analysis_core.model import Action, DistributedForce, JointForce, Line, PointForce, PointMoment
 
 Floats = NDArray[np.float64]
 
@@ -32,77 +23,43 @@ Floats = NDArray[np.float64]
 def joint_residual(
     line: Line,
     cases: Sequence[str],
+    table: MemberTable,
     moments: Floats,
     shears: Floats,
     axial: Floats,
     reactions: Floats,
 ) -> float:
-    """Return the largest unbalance in N·m over joints, cases and the line as a whole.
+    """Return the largest unbalance in N·m over joints, members and cases.
 
-    ``moments``, ``shears``, ``axial`` (M, 2, C) as in LineSolution, ``reactions`` (J, 3, C).
-    Unbalanced forces count with the length of the longest member as their lever.
+    ``moments``, ``shears``, ``axial`` (M, 2, C) as in LineSolution but for the order of axes,
+    ``reactions`` (J, 3, C).  Unbalanced forces count with the longest member as their lever.
     """
-    left = _on_joints(line, cases, moments, shears, axial, reactions)
-    along, about = _within_members(line, cases, moments, shears, axial)
-    lever = max(member.length for member in line.members)
-    worst = max(
-        float(np.abs(left[:, :2]).max(initial=0.0)) * lever,
-        float(np.abs(left[:, 2]).max(initial=0.0)),
-        float(np.abs(along).max(initial=0.0)) * lever,
-        float(np.abs(about).max(initial=0.0)),
+    column = {name: index for index, name in enumerate(cases)}
+    joints = _on_joints(line, column, table, moments, shears, axial, reactions)
+    forces, couples = _on_members(line, column, table, moments, shears, axial)
+    lever = float(table.length.max())
+    return max(
+        float(np.abs(joints[:, :2]).max(initial=0.0)) * lever,
+        float(np.abs(joints[:, 2]).max(initial=0.0)),
+        float(np.abs(forces).max(initial=0.0)) * lever,
+        float(np.abs(couples).max(initial=0.0)),
     )
-    return worst
 
 
-def continuity_residual(
-    line: Line,
-    loads: Loads,
-    moments: Floats,
-    rotations: Floats,
-    displacements: Floats,
-) -> float:
-    """Return the largest difference in rad between a joint and the member ends fastened to it."""
-    worst = 0.0
-    for member in line.members:
-        ends = own_rotations(line, loads, member.id, moments, displacements)
-        for index, (joint, spring) in enumerate(
-            ((member.start, member.start_spring), (member.end, member.end_spring))
-        ):
-            if spring == FREE:
-                continue
-            joined = rotations[joint] - moments[member.id, index] * inverse(spring)
-            worst = max(worst, float(np.abs(joined - ends[index]).max(initial=0.0)))
-    return worst
+def continuity_residual(table: MemberTable, own: Floats, joined: Floats) -> float:
+    """Return the largest difference in rad between member ends and the joints they are fastened to.
 
-
-def own_rotations(
-    line: Line, loads: Loads, number: int, moments: Floats, displacements: Floats
-) -> Floats:
-    """Return the rotations (2, C) of a member's ends by its end moments, actions and chord."""
-    member = line.members[number]
-    weights = elastic_weights(member.pieces)
-    cosine, sine = line.direction(member)
-    across = displacements[member.end] - displacements[member.start]
-    chord = (across[0] * sine + across[1] * cosine) / weights.length
-    own = loads.members[number]
-    start, end = moments[number]
-    # Written out from the flexibilities: unit couples on a beam on two supports.
-    left, right = weights.centre / weights.length, 1.0 - weights.centre / weights.length
-    stretch = (weights.spread + weights.slip) / weights.length**2
-    near = weights.total * right * right + stretch
-    far = weights.total * left * left + stretch
-    cross = stretch - weights.total * left * right
-    return np.stack(
-        [
-            chord + own[2] + near * start + cross * end,
-            chord + own[3] + cross * start + far * end,
-        ]
-    )
+    ``own``, ``joined`` (M, 2, C): rotations from the member's side and from the joint's.
+    """
+    apart = np.abs(own - joined)
+    apart[table.released.T] = 0.0
+    return float(apart.max(initial=0.0))
 
 
 def _on_joints(
     line: Line,
-    cases: Sequence[str],
+    column: dict[str, int],
+    table: MemberTable,
     moments: Floats,
     shears: Floats,
     axial: Floats,
@@ -111,14 +68,13 @@ def _on_joints(
     """Return what is left over on each joint: (J, 3, C) N right, N down, N·m clockwise."""
     left = np.array(reactions)
     left[:, 1] *= -1.0
-    for member in line.members:
-        cosine, sine = line.direction(member)
-        for index, (joint, sign) in enumerate(((member.start, 1.0), (member.end, -1.0))):
-            shear, pull = shears[member.id, index] * sign, axial[member.id, index] * sign
-            left[joint, 0] += shear * sine + pull * cosine
-            left[joint, 1] += shear * cosine - pull * sine
-            left[joint, 2] -= moments[member.id, index]
-    column = {name: index for index, name in enumerate(cases)}
+    for end, sign in ((0, 1.0), (1, -1.0)):
+        pressed = sign * (
+            shears[:, None, end] * table.down[:, :, None]
+            + axial[:, None, end] * table.along[:, :, None]
+        )
+        np.add.at(left[:, :2], table.joints[end], pressed)
+        np.subtract.at(left[:, 2], table.joints[end], moments[:, end])
     for action in line.actions:
         if isinstance(action, JointForce) and action.case in column:
             left[action.joint, :, column[action.case]] += (
@@ -129,24 +85,29 @@ def _on_joints(
     return left
 
 
-def _within_members(
-    line: Line, cases: Sequence[str], moments: Floats, shears: Floats, axial: Floats
+def _on_members(
+    line: Line,
+    column: dict[str, int],
+    table: MemberTable,
+    moments: Floats,
+    shears: Floats,
+    axial: Floats,
 ) -> tuple[Floats, Floats]:
     """Return what is left over on each member: forces (M, 2, C) and couples (M, C)."""
     forces = np.stack([shears[:, 0] - shears[:, 1], axial[:, 1] - axial[:, 0]], axis=1)
-    lengths = np.array([member.length for member in line.members])[:, None]
-    couples = moments.sum(1) + shears[:, 1] * lengths
-    column = {name: index for index, name in enumerate(cases)}
+    couples = moments.sum(1) + shears[:, 1] * table.length[:, None]
+    places, values = [], []
     for action in line.actions:
-        case = column.get(action.case)
-        if case is None:
-            continue
-        across, along, couple = resultant(action)
-        member = getattr(action, "member", None)
-        if member is not None:
-            forces[member, 0, case] -= across
-            forces[member, 1, case] += along
-            couples[member, case] += couple
+        case, member = column.get(action.case), getattr(action, "member", None)
+        if case is not None and member is not None:
+            places.append((member, case))
+            values.append(resultant(action))
+    if places:
+        members, cases = np.array(places).T
+        across, along, couple = np.array(values).T
+        np.subtract.at(forces, (members, 0, cases), across)
+        np.add.at(forces, (members, 1, cases), along)
+        np.add.at(couples, (members, cases), couple)
     return forces, couples
 
 
