@@ -7,7 +7,17 @@ from typing import Any
 
 import pytest
 from analytical_helpers import SCHEMAS, by_name, finding, read, slugs
-from ifc_makers import AnalysisFile, Case, Combination, SpreadLoad, continuous_beam
+from ifc_makers import (
+    AnalysisFile,
+    Case,
+    Combination,
+    MoveJoint,
+    NodeLoad,
+    PointLoad,
+    SpreadLoad,
+    Warmth,
+    continuous_beam,
+)
 
 from analysis_core.ifc.analytical_groups import UNASSIGNED
 
@@ -64,6 +74,22 @@ def test_coefficients_multiply_from_the_action_up_to_its_case(tmp_path: Path, sc
     factors = [f.message for f in building.findings if f.slug == "load-factor"]
     assert len(factors) == 2
     assert any("coefficient 3;" in message for message in factors)
+
+
+def test_coefficients_multiply_every_kind_of_action(tmp_path: Path) -> None:
+    actions = [
+        NodeLoad("n", "G", "J1", LOAD, (0.0, 5.0, 0.0)),
+        MoveJoint("m", "G", "J1", (0.0, 0.0, -0.01), (0.0, 0.002, 0.0)),
+        Warmth("t", "G", "M1", 10.0, 2.0, 4.0),
+        PointLoad("p", "G", "M1", 1.0, LOAD, (0.0, 7.0, 0.0)),
+    ]
+    made = beam(cases=[Case("G", coefficient=3.0)], actions=actions)
+    found = by_name(read(made, tmp_path).actions)
+    assert (found["n"].force[2], found["n"].moment[1]) == (-3e3, 15.0)
+    assert found["m"].displacement[2] == pytest.approx(-0.03)
+    assert found["m"].rotation[1] == pytest.approx(0.006)
+    assert (found["t"].constant, found["t"].difference_y, found["t"].difference_z) == (30, 6, 12)
+    assert (found["p"].forces[0][2], found["p"].moments[0][1]) == (-3e3, 21.0)
 
 
 def test_factors_on_relations_multiply_too_and_may_be_negative(tmp_path: Path) -> None:

@@ -14,6 +14,7 @@ from ifc_makers import (
     Joint,
     Link,
     Model,
+    PointLoad,
     SectionSpec,
     SpreadLoad,
     Stick,
@@ -249,6 +250,7 @@ def test_without_an_axis_the_depth_of_a_column_is_along_x(tmp_path: Path, schema
         ((5.0, 0.0, 0.0), 90.0, (0.0, -1.0, 0.0)),
         ((5.0, 0.0, 0.0), 30.0, (0.0, -0.5, math.sqrt(0.75))),
         ((0.0, 0.0, 5.0), 90.0, (0.0, 1.0, 0.0)),
+        ((0.0, 0.0, 5.0), 30.0, (math.sqrt(0.75), 0.5, 0.0)),
     ],
 )
 def test_ifc2x3_may_turn_the_section_by_an_angle(
@@ -365,6 +367,28 @@ def test_a_varying_member_is_read_as_its_parts_and_loaded_as_a_whole(tmp_path: P
     assert [f[2] for f in first.forces] == pytest.approx([0.0, -2e3])
     assert second.stations == pytest.approx((0.0, 3.0))
     assert [f[2] for f in second.forces] == pytest.approx([-2e3, -8e3])
+
+
+def test_forces_on_a_varying_member_fall_on_the_part_where_they_act(tmp_path: Path) -> None:
+    loads = [
+        PointLoad(f"P{at}", "G", "M1", at, (0.0, 0.0, -1e3), as_vertex=False)
+        for at in (0.0, 1.0, 2.5, 3.0, 5.0)
+    ]
+    made = AnalysisFile(continuous_beam([3.0, 5.0], cases=[Case("G")], actions=loads))
+    parts = [made.by_name["M1"], made.by_name["M2"]]
+    whole = made.rooted(
+        "IfcStructuralCurveMemberVarying", "whole", PredefinedType="RIGID_JOINED_MEMBER"
+    )
+    made.relate("IfcRelAggregates", "parts", whole, parts)
+    for relation in made.file.by_type("IfcRelConnectsStructuralActivity"):
+        relation.RelatingElement = whole
+    building = read(made, tmp_path)
+    names = {m.global_id: m.name for m in building.members}
+    found = {a.name: (names[a.member], a.stations[0]) for a in building.actions}
+    assert found == {
+        "P0.0": ("M1", 0.0), "P1.0": ("M1", 1.0), "P2.5": ("M1", 2.5), "P3.0": ("M2", 0.0),
+        "P5.0": ("M2", 2.0),
+    }  # fmt: skip
 
 
 # -- the model -------------------------------------------------------------------------------

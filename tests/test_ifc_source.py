@@ -188,7 +188,7 @@ def test_several_data_sections_are_all_read(path: Path) -> None:
 
 
 def test_texts_may_hold_keywords_instances_apostrophes_and_comment_marks(path: Path) -> None:
-    nasty = "it''s #7=IFCWALL(); /* ENDSEC;END-ISO-10303-21; DATA; */ ''''"
+    nasty = "it''s #7=IFCWALL(); /* ENDSEC;END-ISO-10303-21; DATA; */ ''''/*''/*"
 
     source = opened(path, small(data=PERSON.format(nasty)))
 
@@ -368,6 +368,7 @@ def test_a_file_without_its_last_line_counts_what_is_there(path: Path) -> None:
         ("#9=IFC.PERSON($,'x',$,$,$,$,$,$);\n", "plain name"),
         ("#99999999999999999999=IFCPERSON($,'x',$,$,$,$,$,$);\n", "digits"),
         ("IFCPERSON($,'x',$,$,$,$,$,$);\n", "near"),
+        ("#9=IFCPERSON(),IFCACTOR();\n", "near"),
         ("#9=;\n", "near"),
         ("*\n", "near"),
     ],
