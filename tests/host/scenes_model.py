@@ -387,3 +387,34 @@ def shade():
     click(lead)
     found["carried_by"] = desk.line
     return found
+
+
+def compare():
+    """Compare a model with an earlier revision, in which one profile was less deep."""
+    desk = activate()
+    path = copied()
+    earlier = path.with_name("earlier.ifc")
+    shutil.copy(path, earlier)
+    text = path.read_text(encoding="utf-8")
+    before, name, after = text.partition("'IPE 300'")
+    _, _position, width, depth, _ = after.split(",", 4)
+    deeper = after.replace(f",{width},{depth},", f",{width},{1.5 * float(depth)},", 1)
+    path.write_text(before + name + deeper, encoding="utf-8")
+    found = {}
+    opened(desk, path)
+    desk.compare(earlier)
+    wait_until(lambda: not desk.runs.busy, what="the comparison")
+    settle()
+    tree = widget(QtWidgets.QTreeWidget, "SpanledgerChanges")
+    found["changed"] = tree.topLevelItemCount()
+    found["summary"] = widget(QtWidgets.QLabel, "SpanledgerChangeSummary").text()
+    found["reasons"] = [tree.topLevelItem(i).text(3) for i in range(tree.topLevelItemCount())]
+    tree.setCurrentItem(tree.topLevelItem(0))
+    settle(0.2)
+    found["line"] = desk.solved.outcome.lines[desk.line].line.mark
+    found["first"] = tree.topLevelItem(0).text(1)
+    found["dashed"] = sum(s.dashed for s in desk.panels.strip.canvas.drawing.strokes)
+    widget(QtWidgets.QCheckBox, "SpanledgerChangeEvery").setChecked(True)
+    found["every"] = tree.topLevelItemCount()
+    picture_of_screen("compare")
+    return found

@@ -120,3 +120,14 @@ def test_lines_that_changed_stand_out_and_reactions_lead_downward(in_freecad):
     assert found["changed"] > 50 > found["plain"]
     assert found["words"] == "↓ on FF-01"
     assert found["carried_by"] == 0
+
+
+def test_an_earlier_revision_is_compared_line_by_line(in_freecad):
+    found = in_freecad("scenes_model:compare")
+
+    assert 0 < found["changed"] < found["every"] == 11
+    assert f"{found['changed']} of 11 lines changed" in found["summary"]
+    assert all(found["reasons"])
+    assert any("reactions it receives" in reason for reason in found["reasons"])
+    assert found["line"] == found["first"]
+    assert found["dashed"] > 0  # the curves of the earlier revision stand beside

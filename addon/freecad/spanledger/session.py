@@ -21,6 +21,7 @@ from analysis_core.units import DisplayUnits, display_units
 if TYPE_CHECKING:
     from analysis_core.ifc.shapes import BuildingShape
     from analysis_core.pipeline import Reading
+    from analysis_core.revision import Reconciliation
     from analysis_core.solving import Memory
 
 
@@ -131,6 +132,21 @@ class Session:
         outcome = pipeline.solve(survey, settings, progress=progress, memory=memory)
         self.reading, self.stamp, self.memory = reading, stamp, memory
         return outcome
+
+    def compare(
+        self, earlier: Path, settings: Settings, progress: Callable[[str, float], None]
+    ) -> Reconciliation:
+        """Compare with an earlier revision of the model; may be called in another thread.
+
+        Raises IfcReadError, JobError, and whatever ``progress`` raises.
+        """
+        from analysis_core import pipeline
+
+        return pipeline.reconcile(earlier, self.path, settings, progress=progress)
+
+    def take_compared(self, found: Reconciliation) -> None:
+        """Go on with the later of two outcomes, the earlier one beside it."""
+        self.outcome, self.previous, self.stale = found.after, found.before, False
 
     def read_again(self) -> None:
         """Take the model and the job file from the disk at the next run.

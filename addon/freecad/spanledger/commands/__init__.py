@@ -6,6 +6,7 @@ import FreeCADGui
 
 from . import (
     balance_lines,
+    compare_revision,
     open_model,
     post_results,
     redo_decision,
@@ -26,6 +27,7 @@ def register() -> list[str]:
         "Spanledger_Balance": balance_lines.BalanceLines(),
         "Spanledger_Undo": undo_decision.UndoDecision(),
         "Spanledger_Redo": redo_decision.RedoDecision(),
+        "Spanledger_Compare": compare_revision.CompareRevision(),
         "Spanledger_Post": post_results.PostResults(),
         "Spanledger_Building": show_building.ShowBuilding(),
         "Spanledger_Desk": show_desk.ShowDesk(),
@@ -35,5 +37,5 @@ def register() -> list[str]:
     return [
         "Spanledger_Open", "Spanledger_Job", "Spanledger_Balance", SEPARATOR,
         "Spanledger_Undo", "Spanledger_Redo", SEPARATOR,
-        "Spanledger_Post", SEPARATOR, "Spanledger_Building", "Spanledger_Desk",
+        "Spanledger_Compare", "Spanledger_Post", SEPARATOR, "Spanledger_Building", "Spanledger_Desk",
     ]  # fmt: skip

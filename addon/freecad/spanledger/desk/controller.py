@@ -50,6 +50,7 @@ class Desk(QtCore.QObject):
         strip.inspector.line_wanted.connect(self.choose_line)
         strip.shading_changed.connect(lambda _way: self._shade())
         self.panels.bearings.wanted.connect(self.show_bearing)
+        self.panels.changes.line_wanted.connect(self.choose_line)
         self.panels.record.order_changed.connect(lambda _order: self._show_record())
         self.panels.record.released.connect(self._show_released)
         self.panels.record_dock.visibilityChanged.connect(lambda _on: self._show_record())
@@ -148,6 +149,32 @@ class Desk(QtCore.QObject):
         if obj is not None:
             obj.JobFile = str(session.job_path)
         self._run(name)
+
+    def ask_for_earlier(self) -> None:
+        """Let the user choose an earlier revision, and compare."""
+        path, _kind = QtWidgets.QFileDialog.getOpenFileName(
+            FreeCADGui.getMainWindow(), translate("Spanledger", "Earlier revision"),
+            str(self.session.path.parent),
+            translate("Spanledger", "IFC models (*.ifc *.ifczip)"),
+        )  # fmt: skip
+        if path:
+            self.compare(path)
+
+    def compare(self, earlier: str | Path) -> None:
+        """Compare with an earlier revision of the model."""
+        session, name = self.session, FreeCAD.ActiveDocument.Name
+        settings = session.settings
+
+        def task(progress: Progress) -> Any:
+            return session.compare(Path(earlier), settings, progress)
+
+        def done(found: Any) -> None:
+            if self.sessions.get(name) is session:
+                session.take_compared(found)
+                self._show_all(name)
+                self.panels.show_changes(found, session)
+
+        self.runs.start(task, done)
 
     def run_again(self) -> None:
         """Read the model and its job file again and balance the lines."""

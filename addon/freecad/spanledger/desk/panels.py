@@ -8,6 +8,7 @@ import FreeCADGui
 
 from analysis_core.units import display_units
 
+from ..present.changes import change_rows, summary
 from ..present.diagrams import views_of
 from ..present.findings import finding_rows
 from ..present.listing import Row
@@ -17,6 +18,7 @@ from ..qt import Qt, QtWidgets
 from ..session import Session
 from ..texts import translate
 from .bearings_list import BearingsList
+from .changes_list import ChangesList
 from .findings_list import FindingsList
 from .line_desk import LineDesk
 from .line_list import LineList
@@ -41,6 +43,7 @@ class Panels:
         self.tabs.addTab(self.findings, translate("Spanledger", "Findings"))
         self.bearings = BearingsList()
         self.tabs.addTab(self.bearings, translate("Spanledger", "Reactions"))
+        self.changes = ChangesList()  # becomes a tab once revisions are compared
         self.list_dock = _dock(
             window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
             _stacked(self.tabs, self.running), Qt.DockWidgetArea.RightDockWidgetArea,
@@ -90,6 +93,13 @@ class Panels:
         title = translate("Spanledger", "Findings ({count})").format(count=len(found))
         self.tabs.setTabText(1, title)
 
+    def show_changes(self, found: Any, session: Session) -> None:
+        """Show what changed since an earlier revision."""
+        self.changes.show_rows(change_rows(found, session.units), summary(found))
+        if self.tabs.indexOf(self.changes) < 0:
+            self.tabs.addTab(self.changes, translate("Spanledger", "Changes"))
+        self.tabs.setCurrentWidget(self.changes)
+
     def show_line(self, session: Session, line: int, spot: Spot | None) -> None:
         """Show one line, and what is chosen of it."""
         view = self.strip.current_view()
@@ -138,6 +148,8 @@ class Panels:
         self.list.show_rows([], units)
         self.findings.show_rows([])
         self.bearings.show_rows([], units)
+        if self.tabs.indexOf(self.changes) >= 0:
+            self.tabs.removeTab(self.tabs.indexOf(self.changes))
         self.tabs.setTabText(1, translate("Spanledger", "Findings"))
         self.strip.show_views([])
         self.strip.show_strip(None, units)
