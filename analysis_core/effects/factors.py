@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import itertools
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 import numpy as np
 from numpy.typing import NDArray
@@ -36,11 +36,18 @@ class FactorTable:
     low: Floats
     high: Floats
     stated: Floats
+    fixed: bool = field(init=False)
+    """Whether no row leaves a choice."""
+    alike: tuple[tuple[int, ...], ...] = field(init=False)
+    """Numbers of parts that take the same factors in every row."""
 
-    @property
-    def fixed(self) -> bool:
-        """Whether no row leaves a choice."""
-        return bool(np.array_equal(self.low, self.high))
+    def __post_init__(self) -> None:
+        object.__setattr__(self, "fixed", bool(np.array_equal(self.low, self.high)))
+        groups: dict[bytes, list[int]] = {}
+        for c in range(len(self.parts)):
+            key = self.low[:, c].tobytes() + self.high[:, c].tobytes()
+            groups.setdefault(key, []).append(c)
+        object.__setattr__(self, "alike", tuple(tuple(g) for g in groups.values()))
 
     def sources(
         self,

@@ -7,7 +7,7 @@ polynomial there serve two places each.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
@@ -105,32 +105,22 @@ def both(values: Floats, table: FactorTable) -> tuple[Floats, Floats]:
     """
     shape = (*values.shape[:-2], len(table.names), values.shape[-1])
     high, low = np.zeros(shape), np.zeros(shape)
-    for columns in _alike(table):
-        lows, highs = table.low[:, columns[0]], table.high[:, columns[0]]
-        total = _total(values, columns)
-        free = lows != highs
-        positive = _total(np.maximum(values, 0.0), columns) if free.any() else total
-        for n in np.flatnonzero(lows) if not free.any() else range(len(lows)):
-            if free[n]:
-                spread = (highs[n] - lows[n]) * positive
-                high[..., n, :] += lows[n] * total + spread if lows[n] else spread
-                low[..., n, :] += highs[n] * total - spread
-            elif lows[n]:
-                fixed = lows[n] * total
-                high[..., n, :] += fixed
-                low[..., n, :] += fixed
+    for columns in table.alike:
+        lows = table.low[:, columns[0], None]
+        spread = table.high[:, columns[0], None] - lows
+        total = _total(values, columns)[..., None, :]
+        if lows.any():
+            fixed = lows * total
+            high += fixed
+            low += fixed
+        if spread.any():
+            positive = spread * _total(np.maximum(values, 0.0), columns)[..., None, :]
+            high += positive
+            low += spread * total - positive
     return high, low
 
 
-def _alike(table: FactorTable) -> list[list[int]]:
-    groups: dict[bytes, list[int]] = {}
-    for c in range(len(table.parts)):
-        key = table.low[:, c].tobytes() + table.high[:, c].tobytes()
-        groups.setdefault(key, []).append(c)
-    return list(groups.values())
-
-
-def _total(values: Floats, columns: list[int]) -> Floats:
+def _total(values: Floats, columns: Sequence[int]) -> Floats:
     total: Floats = values[..., columns[0], :]
     for c in columns[1:]:
         total = total + values[..., c, :]
