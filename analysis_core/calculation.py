@@ -4,14 +4,19 @@ from __future__ import annotations
 
 from typing import cast
 
+from analysis_core.checking import check_line
 from analysis_core.distribution.record import distribute
 from analysis_core.effects.states import State, state_line
 from analysis_core.errors import AnalysisError
 from analysis_core.fixed_end_rows import fixed_end_rows
+from analysis_core.model import LineModel
 from analysis_core.record_rows import closing_note, record_tables
 from analysis_core.results import LineResult
+from analysis_core.settings import Settings
+from analysis_core.sheet.checks import NOTE, member_checks
 from analysis_core.sheet.distribution import distribution, fixed_ends
 from analysis_core.sheet.html import Markup, tag
+from analysis_core.sheet.line_section import member_name
 from analysis_core.units import DisplayUnits
 
 _SHOWN = ("sagging", "hogging")
@@ -30,6 +35,26 @@ def distribution_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
         left = "; ".join(s.source for s in states[_MOST:])
         parts.append(tag("p", f"Not written down, for length: {left}.", class_="verification"))
     return [tag("h3", "Distribution of the governing states"), *parts] if parts else []
+
+
+def check_parts(
+    result: LineResult, model: LineModel, settings: Settings, units: DisplayUnits
+) -> list[Markup]:
+    """Return the checks of the members of a line."""
+    found = check_line(result, model, settings)
+    if not found:
+        return []
+    parts = [
+        member_checks(
+            member_name(result.line.members[each.member]),
+            each.code,
+            each.restraints,
+            each.checks,
+            units,
+        )
+        for each in found
+    ]
+    return [tag("h3", "Member checks"), *parts, tag("p", NOTE, class_="verification")]
 
 
 def _one(result: LineResult, state: State, units: DisplayUnits) -> list[Markup]:

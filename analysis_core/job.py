@@ -22,6 +22,7 @@ from analysis_core.settings import (
     Analysis,
     AreaActionSetting,
     CaseSetting,
+    CheckSettings,
     CombinationSetting,
     Display,
     Limits,
@@ -29,6 +30,7 @@ from analysis_core.settings import (
     MovementSetting,
     Redistribution,
     ReleaseSetting,
+    RestraintSetting,
     RuleSettings,
     SectionSetting,
     Selector,
@@ -151,6 +153,7 @@ def _settings(data: Mapping[str, Any], text: str) -> Settings:
         materials=each("materials", _material),
         sections=each("sections", _section),
         limits=each("limits", _limits),
+        checks=_checks(data.get("checks", {})),
         text=text,
     )
 
@@ -355,6 +358,23 @@ def _section(data: Mapping[str, Any], where: str) -> SectionSetting:
 def _limits(data: Mapping[str, Any], where: str) -> Limits:
     known = {k: v for k, v in data.items() if k != "on"}
     return Limits(on=_selector(data.get("on", {})), **known)
+
+
+def _checks(data: Mapping[str, Any]) -> CheckSettings:
+    return CheckSettings(
+        codes={key: data[key] for key in ("steel", "concrete", "timber") if key in data},
+        replace=data.get("replace", {}),
+        restraints=tuple(
+            RestraintSetting(
+                on=_selector(item["on"]),
+                flange=item.get("flange", "top"),
+                continuous=item.get("continuous", False),
+                stations=tuple(item.get("at", ())),
+            )
+            for item in data.get("restraints", ())
+        ),
+        durations=data.get("durations", {}),
+    )
 
 
 def _end(data: Mapping[str, Any], where: str) -> Any:

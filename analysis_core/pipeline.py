@@ -236,16 +236,21 @@ def of_storeys(outcome: Outcome, storeys: Sequence[str]) -> Outcome:
 
 def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
-    from analysis_core.calculation import distribution_parts
+    from analysis_core.calculation import check_parts, distribution_parts
     from analysis_core.sheet.document import sheet as write_sheet
 
     units = display_units(settings.display.system, settings.display.units)
     today = date or datetime.now().date().isoformat()
 
-    def extra(result: LineResult) -> list[Markup]:
+    def working(result: LineResult) -> list[Markup]:
         return distribution_parts(result, units)
 
-    return write_sheet(outcome, units, title=settings.title, date=today, extra=extra)
+    def checks(result: LineResult) -> list[Markup]:
+        return check_parts(result, outcome.model, settings, units)
+
+    return write_sheet(
+        outcome, units, title=settings.title, date=today, working=working, checks=checks
+    )
 
 
 def job_text(found: Survey, settings: Settings) -> str:

@@ -256,6 +256,31 @@ class RuleSettings:
 
 
 @dataclass(frozen=True, slots=True)
+class RestraintSetting:
+    """Where the flanges of members are held sideways: m from the element's start, or all along."""
+
+    on: Selector
+    flange: Literal["top", "bottom", "both"] = "top"
+    continuous: bool = False
+    stations: tuple[float, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class CheckSettings:
+    """By what members are checked: a code by category of material, "none" to leave it out.
+
+    ``codes`` by "steel", "concrete", "timber"; those not named follow the rule set.  ``replace``
+    puts the project's own values in place of figures ("gamma_M0").  ``durations``: load-duration
+    class by case.
+    """
+
+    codes: Mapping[str, str] = field(default_factory=dict)
+    replace: Mapping[str, float] = field(default_factory=dict)
+    restraints: tuple[RestraintSetting, ...] = ()
+    durations: Mapping[str, str] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, slots=True)
 class Analysis:
     """How the lines are idealised and solved."""
 
@@ -305,5 +330,6 @@ class Settings:
     materials: tuple[MaterialSetting, ...] = ()
     sections: tuple[SectionSetting, ...] = ()
     limits: tuple[Limits, ...] = ()
+    checks: CheckSettings = field(default_factory=CheckSettings)
     text: str = ""
     """The job file as it was read, for fingerprints."""

@@ -181,7 +181,7 @@ _SYSTEMS: dict[str, dict[str, tuple[str, int]]] = {
         "section length": ("mm", 0), "area": ("cm2", 1), "inertia": ("cm4", 0),
         "translational stiffness": ("kN/m", 0), "rotational stiffness": ("kN*m/rad", 0),
         "rotation": ("mrad", 3), "density": ("kg/m3", 0), "temperature difference": ("K", 1),
-        "flexural rigidity": ("kN*m2", 0),
+        "flexural rigidity": ("kN*m2", 0), "section modulus": ("cm3", 1), "warping": ("cm6", 0),
     },
     "us": {
         "length": ("ft", 2), "deflection": ("in", 3), "force": ("kip", 2), "moment": ("kip*ft", 2),
@@ -189,7 +189,7 @@ _SYSTEMS: dict[str, dict[str, tuple[str, int]]] = {
         "section length": ("in", 2), "area": ("in2", 2), "inertia": ("in4", 1),
         "translational stiffness": ("kip/in", 1), "rotational stiffness": ("kip*ft/rad", 0),
         "rotation": ("mrad", 3), "density": ("pcf", 0), "temperature difference": ("degF", 1),
-        "flexural rigidity": ("kip*in2", 0),
+        "flexural rigidity": ("kip*in2", 0), "section modulus": ("in3", 2), "warping": ("in6", 0),
     },
 }  # fmt: skip
 
@@ -199,6 +199,8 @@ _DISPLAY_DIMENSIONS: dict[str, Dimension] = {
     "section length": _LENGTH,
     "rotation": _ANGLE,
     "flexural rigidity": (1, 3, -2, 0, 0),
+    "section modulus": (0, 3, 0, 0, 0),
+    "warping": (0, 6, 0, 0, 0),
 }
 
 
@@ -229,6 +231,7 @@ def _display_unit(symbol: str, decimals: int) -> tuple[str, float, int]:
     pretty = symbol.replace("*", "·").replace("degF", "°F").replace("degC", "°C")
     pretty = re.sub(r"(?<=[A-Za-z])\^?2", "²", pretty)
     pretty = re.sub(r"(?<=[A-Za-z])\^?3", "³", pretty)
+    pretty = re.sub(r"(?<=[A-Za-z])\^?6", "⁶", pretty)
     return re.sub(r"(?<=[A-Za-z])\^?4", "⁴", pretty), factor, decimals
 
 

@@ -24,6 +24,7 @@ from analysis_core.results import Extreme, LineEnvelope, LineSolution, Stations
 Floats = NDArray[np.float64]
 
 _COUNT = 41
+_NOTHING = 1e-9  # of the largest effect: an end that carries no moment has no governing state
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,7 +60,7 @@ def governing_states(
             ("shear", member.shear_max, True, at.shear),
             ("shear", member.shear_min, False, at.shear),
         ):
-            if not extreme.source:
+            if not extreme.source or abs(extreme.value) <= _NOTHING * np.abs(values).max():
                 continue
             index = int(np.argmin(np.abs(at.x[member.member] - extreme.x)))
             parts = values[:, member.member, index]

@@ -20,15 +20,17 @@ def sheet(
     *,
     title: str = "",
     date: str = "",
-    extra: Extra | None = None,
+    working: Extra | None = None,
+    checks: Extra | None = None,
 ) -> str:
     """Return the sheet as HTML text.
 
-    ``date`` is shown as given.  ``extra`` gives what stands between a line's actions and its
-    effects: the distribution, redistribution and checks.
+    ``date`` is shown as given.  ``working`` gives what stands between a line's actions and its
+    effects (the distribution), ``checks`` what stands behind them.
     """
     names = dict(outcome.model.names)
-    more = extra or (lambda result: [])
+    working = working or _nothing
+    checks = checks or _nothing
     body = tag(
         "body",
         cover(outcome, units, title=title, date=date),
@@ -38,7 +40,10 @@ def sheet(
             summary(outcome, units),
             basis(outcome),
             findings(outcome.findings, names),
-            [line_section(result, names, units, more(result)) for result in outcome.lines],
+            [
+                line_section(result, names, units, working(result), checks(result))
+                for result in outcome.lines
+            ],
         ),
     )
     style = resources.files("analysis_core.sheet").joinpath("style.css").read_text("utf-8")
@@ -51,3 +56,7 @@ def sheet(
         tag("style", Markup(style)),
     )
     return f"<!DOCTYPE html>\n{tag('html', head, body, lang='en').text}\n"
+
+
+def _nothing(result: LineResult) -> list[Markup]:
+    return []

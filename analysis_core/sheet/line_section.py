@@ -18,9 +18,16 @@ from analysis_core.units import DisplayUnits
 
 
 def line_section(
-    result: LineResult, names: Mapping[str, str], units: DisplayUnits, extra: list[Markup]
+    result: LineResult,
+    names: Mapping[str, str],
+    units: DisplayUnits,
+    working: list[Markup],
+    checks: list[Markup],
 ) -> Markup:
-    """Return the section of a line.  ``extra``: what stands between actions and effects."""
+    """Return the section of a line.
+
+    ``working`` stands between actions and effects, ``checks`` behind the effects.
+    """
     line = result.line
     at = strip(line)
     storey = f", {line.storey}" if line.storey else ""
@@ -32,8 +39,9 @@ def line_section(
         *_actions(line, at, units),
     ]
     if result.status == "balanced":
-        parts += extra
+        parts += working
         parts += _effects(result, at, units)
+        parts += checks
         parts += _reactions(result, names, units)
         parts.append(_verification(result))
     else:
