@@ -37,5 +37,6 @@ def register() -> list[str]:
     return [
         "Spanledger_Open", "Spanledger_Job", "Spanledger_Balance", SEPARATOR,
         "Spanledger_Undo", "Spanledger_Redo", SEPARATOR,
-        "Spanledger_Compare", "Spanledger_Post", SEPARATOR, "Spanledger_Building", "Spanledger_Desk",
+        "Spanledger_Compare", "Spanledger_Post", SEPARATOR,
+        "Spanledger_Building", "Spanledger_Desk",
     ]  # fmt: skip
