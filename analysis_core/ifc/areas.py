@@ -8,11 +8,11 @@ from typing import Any, NamedTuple
 import numpy as np
 
 from analysis_core.building import Area
-from analysis_core.ifc.bodies import Item, Mesh, Prism
+from analysis_core.ifc.body_items import Item, Mesh, Prism
 from analysis_core.ifc.elements import Elements
 from analysis_core.ifc.extents import Extent, ExtentReader, plan_rings
 from analysis_core.ifc.frames import Frame
-from analysis_core.ifc.mesh_prisms import hull
+from analysis_core.ifc.mesh_cuts import hull
 from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.unreadable import READ_ERRORS

@@ -1,122 +1,27 @@
-"""Bodies of products as prisms, meshes or curved sweeps, in the product's own coordinates.
-
-A *prism* is a profile carried along a straight vector: what an extrusion is, whether mapped,
-clipped, cut by openings, stretched by its mapping or one part of a boolean tree.  Everything
-with faces is a *mesh*.  Anything swept along a curve or an angle is *curved*.
-"""
+"""Bodies of products as prisms, meshes or curved sweeps, in the product's own coordinates."""
 
 from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable
-from typing import Any, NamedTuple
+from typing import Any
 
 import numpy as np
 
 from analysis_core.ifc import frames, outline
-from analysis_core.ifc.curves import Measures, Path, Segment, read_path, sampled
+from analysis_core.ifc.body_items import NOTHING, Curved, Cut, Item, Mesh, Prism, Shape
+from analysis_core.ifc.curves import read_path
+from analysis_core.ifc.drawn import Drawn
+from analysis_core.ifc.face_gatherer import FaceGatherer
 from analysis_core.ifc.frames import WORLD, Frame, Vector
 from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.paths import Measures, Path, Segment, in_space, sampled
 from analysis_core.ifc.placements import Placements
-from analysis_core.ifc.profile_outlines import Drawn
 from analysis_core.ifc.sections import Profile, SectionReader, profile_of
 from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError, reason_of
 
 _DEEPEST_NESTING = 40
 
-
-class Cut(NamedTuple):
-    """A half-space taken away: everything on the side of ``normal`` beyond ``point``.
-
-    ``reach`` (n, 2) bounds it in the plane of ``frame`` (its x, y axes), or None: unbounded.
-    """
-
-    point: Vector
-    normal: Vector
-    frame: Frame | None = None
-    reach: Floats | None = None
-
-    def moved(self, frame: Frame) -> Cut:
-        """Return the cut after ``frame`` was applied (its axes nearly at right angles)."""
-        back = frames.inverse(frame)
-        # A normal goes with the transposed inverse.
-        normal = (
-            back[0] * self.normal[0] + back[1] * self.normal[1] + back[2] * self.normal[2],
-            back[3] * self.normal[0] + back[4] * self.normal[1] + back[5] * self.normal[2],
-            back[6] * self.normal[0] + back[7] * self.normal[1] + back[8] * self.normal[2],
-        )
-        return Cut(
-            frames.point(frame, *self.point),
-            normal,
-            frames.compose(frame, self.frame) if self.frame else None,
-            self.reach,
-        )
-
-
-class Prism(NamedTuple):
-    """A profile in the x, y plane of ``frame``, carried along ``vector``.
-
-    ``entity`` is the profile's entity, ``end_profile`` the profile at the far end of a taper.
-    """
-
-    profile: Profile
-    frame: Frame
-    vector: Vector
-    entity: Any = None
-    end_profile: Profile | None = None
-    end_entity: Any = None
-    cuts: tuple[Cut, ...] = ()
-    trimmed: bool = False
-    """Whether something other than a half-space was taken from it."""
-    remark: str = ""
-    """What had to be assumed to see a prism in the body."""
-
-    def moved(self, frame: Frame) -> Prism:
-        """Return the prism after ``frame`` was applied."""
-        return self._replace(
-            frame=frames.compose(frame, self.frame),
-            vector=frames.direction(frame, *self.vector),
-            cuts=tuple(cut.moved(frame) for cut in self.cuts),
-        )
-
-
-class Mesh(NamedTuple):
-    """Faces as lists of loops of indices into ``points`` (n, 3); no faces: a cloud of points."""
-
-    points: Floats
-    faces: tuple[tuple[tuple[int, ...], ...], ...]
-    ifc_class: str
-
-    def moved(self, frame: Frame) -> Mesh:
-        """Return the mesh after ``frame`` was applied."""
-        return self._replace(points=frames.images(frame, self.points))
-
-
-class Curved(NamedTuple):
-    """A sweep along a curve: points (n, 3) of its line, and what it is."""
-
-    points: Floats
-    ifc_class: str
-    profile: Profile | None = None
-
-    def moved(self, frame: Frame) -> Curved:
-        """Return the sweep after ``frame`` was applied."""
-        return self._replace(points=frames.images(frame, self.points))
-
-
-Item = Prism | Mesh | Curved
-
-
-class Shape(NamedTuple):
-    """What a product's representation says: its axis, its body, and what was not understood."""
-
-    axis: Path | None = None
-    items: tuple[Item, ...] = ()
-    troubles: tuple[str, ...] = ()
-    box_only: bool = False
-
-
-NOTHING = Shape()
 _NOT_A_BODY = {"body", "axis", "footprint", "box", "annotation", "cog", "profile", "reference",
                "clearance", "lighting", "survey", "surface", "plan", "boundingbox"}  # fmt: skip
 
@@ -344,7 +249,7 @@ class BodyReader:
         return (Prism(_disk_profile(radius, 0.0), frame, vector),)
 
     def _disk(self, item: Any, depth: int) -> Iterable[Item]:
-        points = _in_space(sampled(read_path(item[0], self._measures)))
+        points = in_space(sampled(read_path(item[0], self._measures)))
         radius = item[1] * self._length
         inner = (item[2] or 0.0) * self._length
         profile = _disk_profile(radius, inner)
@@ -369,13 +274,13 @@ class BodyReader:
     def _directrix(self, item: Any, depth: int) -> Iterable[Item]:
         profile = self._profile(item[0])
         frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
-        points = frames.images(frame, _in_space(sampled(read_path(item[2], self._measures))))
+        points = frames.images(frame, in_space(sampled(read_path(item[2], self._measures))))
         if not _straight(points):
             return (Curved(points, item.is_a(), profile),)
         return (_prism_between(points[0], points[-1], profile, item[0]),)
 
     def _sectioned(self, item: Any, depth: int) -> Iterable[Item]:
-        points = _in_space(sampled(read_path(item[0], self._measures)))
+        points = in_space(sampled(read_path(item[0], self._measures)))
         sections = [self._profile(entity) for entity in item[1]]
         if not _straight(points):
             return (Curved(points, item.is_a(), sections[0]),)
@@ -403,14 +308,14 @@ class BodyReader:
         return self._shell(item[0], depth, item.is_a())
 
     def _surfaces(self, item: Any, depth: int) -> Iterable[Item]:
-        gathered = _Gatherer(self._length, self._measures)
+        gathered = FaceGatherer(self._length, self._measures)
         for shell in item[0]:
             for face in shell[0]:
                 gathered.add(face)
         return gathered.mesh(item.is_a())
 
     def _shell(self, item: Any, depth: int, ifc_class: str = "") -> Iterable[Item]:
-        gathered = _Gatherer(self._length, self._measures)
+        gathered = FaceGatherer(self._length, self._measures)
         for face in item[0]:
             gathered.add(face)
         return gathered.mesh(ifc_class or item.is_a())
@@ -435,90 +340,6 @@ class BodyReader:
         return (Mesh(points, tuple(faces), item.is_a()),)
 
 
-class _Gatherer:
-    """Collects faces of a boundary representation, their points once each."""
-
-    def __init__(self, scale: float, measures: Measures) -> None:
-        self._scale = scale
-        self._measures = measures
-        self._index: dict[int, int] = {}
-        self._points: list[tuple[float, ...]] = []
-        self._faces: list[tuple[tuple[int, ...], ...]] = []
-
-    def add(self, face: Any) -> None:
-        loops = []
-        for bound in face[0]:
-            ring = bound[0]
-            if ring.is_a("IfcPolyLoop"):
-                loops.append(tuple(self._vertex(point) for point in ring[0]))
-            elif ring.is_a("IfcEdgeLoop"):
-                loops.append(tuple(self._edges(ring[0])))
-        if loops:
-            self._faces.append(tuple(loops))
-
-    def mesh(self, ifc_class: str) -> Iterable[Item]:
-        if len(self._points) < 4:
-            raise UnreadableShapeError("a body with fewer than four corners")
-        return (Mesh(np.array(self._points), tuple(self._faces), ifc_class),)
-
-    def _vertex(self, point: Any) -> int:
-        key = point.id()
-        index = self._index.get(key)
-        if index is None:
-            x, y, z = point[0]
-            scale = self._scale
-            index = self._index[key] = len(self._points)
-            self._points.append((x * scale, y * scale, z * scale))
-        return index
-
-    def _edges(self, edges: Any) -> Iterable[int]:
-        for oriented in edges:
-            edge = oriented.EdgeElement if oriented.is_a("IfcOrientedEdge") else oriented
-            forward = bool(oriented.Orientation) if oriented.is_a("IfcOrientedEdge") else True
-            start, end = edge[0], edge[1]
-            if not forward:
-                start, end = end, start
-            yield self._vertex(start[0])
-            if edge.is_a("IfcEdgeCurve") and edge.EdgeGeometry.is_a() not in _STRAIGHT_CURVES:
-                yield from self._along(edge, forward)
-
-    def _along(self, edge: Any, forward: bool) -> Iterable[int]:
-        """Points between the ends of a curved edge, in its direction."""
-        key = -edge.id()
-        if key not in self._index:
-            inner = _edge_points(edge, self._measures)
-            self._index[key] = len(self._points)
-            self._index[-edge.id() - (1 << 40)] = len(inner)
-            self._points.extend(tuple(row) for row in inner.tolist())
-        first = self._index[key]
-        count = self._index[-edge.id() - (1 << 40)]
-        order = range(first, first + count)
-        return order if forward else reversed(order)
-
-
-_STRAIGHT_CURVES = {"IfcLine", "IfcPolyline"}
-
-
-def _edge_points(edge: Any, measures: Measures) -> Floats:
-    """Points strictly between the vertices of a curved edge."""
-    ends = [
-        np.array(vertex[0][0], dtype=np.float64) * measures.length for vertex in (edge[0], edge[1])
-    ]
-    try:
-        points = _in_space(sampled(read_path(edge.EdgeGeometry, measures)))
-    except UnreadableShapeError:
-        return np.zeros((0, 3))
-    near = [int(np.linalg.norm(points - end, axis=1).argmin()) for end in ends]
-    first, last = near
-    if not edge.SameSense:
-        points = points[::-1]
-        first, last = len(points) - 1 - first, len(points) - 1 - last
-    if first <= last:
-        return points[first + 1 : last]
-    closed = np.allclose(points[0], points[-1])
-    return np.vstack([points[first + 1 :], points[:last]]) if closed else np.zeros((0, 3))
-
-
 def _moved_path(path: Path, frame: Frame) -> Path:
     def image(p: tuple[float, ...]) -> tuple[float, ...]:
         return frames.point(frame, p[0], p[1], p[2] if len(p) > 2 else 0.0)
@@ -527,12 +348,6 @@ def _moved_path(path: Path, frame: Frame) -> Path:
         tuple(Segment(tuple(image(p) for p in segment.points)) for segment in path.segments),
         path.exact,
     )
-
-
-def _in_space(points: Floats) -> Floats:
-    if points.shape[1] == 3:
-        return points
-    return np.column_stack([points, np.zeros(len(points))])
 
 
 def _straight(points: Floats) -> bool:

@@ -6,7 +6,8 @@ from contextlib import suppress
 from typing import Any
 
 from analysis_core.ifc import frames
-from analysis_core.ifc.bodies import BodyReader, Shape
+from analysis_core.ifc.bodies import BodyReader
+from analysis_core.ifc.body_items import Shape
 from analysis_core.ifc.frames import Frame
 from analysis_core.ifc.library_shape import library_mesh
 from analysis_core.ifc.material_choice import NO_CHOICE, Choice, choose

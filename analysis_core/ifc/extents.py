@@ -9,13 +9,14 @@ from typing import NamedTuple
 import numpy as np
 
 from analysis_core.ifc import frames, outline
-from analysis_core.ifc.bodies import Curved, Item, Mesh, Prism
+from analysis_core.ifc.body_items import Curved, Item, Mesh, Prism
 from analysis_core.ifc.convex_pieces import convex_pieces
 from analysis_core.ifc.frames import Frame, Vector
-from analysis_core.ifc.mesh_prisms import hull, section_loops
+from analysis_core.ifc.main_prism import after_cut
+from analysis_core.ifc.mesh_cuts import hull, section_loops
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.sections import Profile
-from analysis_core.ifc.sticks import Stick, after_cut
+from analysis_core.ifc.sticks import Stick
 
 _FULL = 0.9  # of its convex outline: nearly convex
 Corners = tuple[tuple[float, float], ...]

@@ -10,7 +10,7 @@ from typing import Any
 
 import numpy as np
 
-from analysis_core.ifc.bodies import Mesh
+from analysis_core.ifc.body_items import Mesh
 
 
 def library_mesh(definition: Any) -> Mesh | None:

@@ -8,32 +8,22 @@ the cut through the faces half-way, so an I-beam written as triangles keeps its 
 from __future__ import annotations
 
 import math
-from collections import defaultdict
-from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.ifc import frames, outline
-from analysis_core.ifc.bodies import Curved, Mesh, Prism
-from analysis_core.ifc.outline import Floats, Loops
-from analysis_core.ifc.profile_outlines import Drawn
+from analysis_core.ifc.body_items import Curved, Mesh, Prism
+from analysis_core.ifc.drawn import Drawn
+from analysis_core.ifc.mesh_cuts import HALF_WAY, Faces, closed_cut, inside, merged, section_at
+from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.recognise import recognise
 from analysis_core.ifc.sections import Profile, profile_of
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
-Faces = tuple[tuple[tuple[int, ...], ...], ...]
-_HALF_WAY = 0.5013  # not quite: a cut exactly through corners is ambiguous
 _CURVED = 1.0 / 150.0
+
 _TAPERED = 0.05
-
-
-class _Corner(NamedTuple):
-    """Where an edge crosses the cutting plane: the edge and the point (y, z) in the plane."""
-
-    edge: tuple[int, int]
-    y: float
-    z: float
 
 
 def prism_of_mesh(mesh: Mesh) -> Prism | Curved:
@@ -41,7 +31,7 @@ def prism_of_mesh(mesh: Mesh) -> Prism | Curved:
 
     Raises UnreadableShapeError for a mesh without extent.
     """
-    points, faces = _merged(mesh)
+    points, faces = merged(mesh)
     base = points.mean(axis=0)
     local = points - base
     size = float(np.ptp(local, axis=0).max())
@@ -51,8 +41,8 @@ def prism_of_mesh(mesh: Mesh) -> Prism | Curved:
     axes = _axes(axis, local)
     turned = local @ axes.T
     low, high = float(turned[:, 0].min()), float(turned[:, 0].max())
-    middle = low + _HALF_WAY * (high - low)
-    loops, remark = _section(turned, faces, middle)
+    middle = low + HALF_WAY * (high - low)
+    loops, remark = section_at(turned, faces, middle)
     drawn = recognise(loops)
     profile = profile_of("", mesh.ifc_class, drawn)
     line = _line_of_centroids(turned, faces, low, high)
@@ -85,54 +75,6 @@ def mesh_of_prism(prism: Prism) -> Mesh:
     both = np.vstack([base, base + np.array(prism.vector)])
     top = tuple(tuple(i + total for i in ring) for ring in bottom)
     return Mesh(both, (tuple(bottom), top, *sides), prism.profile.ifc_class)
-
-
-def section_loops(mesh: Mesh, axis: int) -> Loops:
-    """Return the outline of a mesh cut half-way along a world axis (0, 1 or 2).
-
-    Coordinates of the loops are those of the other two axes, in order; empty where the cut does
-    not close.
-    """
-    points, faces = _merged(mesh)
-    order = [axis, *(i for i in range(3) if i != axis)]
-    turned = points[:, order]
-    low, high = float(turned[:, 0].min()), float(turned[:, 0].max())
-    loops = _chained(_cut(turned, faces, low + _HALF_WAY * (high - low)))
-    return _nested(loops) if loops else ()
-
-
-def hull(points: Floats) -> Floats:
-    """Return the convex hull (n, 2) of points in the plane, anticlockwise (monotone chain)."""
-    ordered = sorted({(float(x), float(y)) for x, y in points})
-    if len(ordered) < 3:
-        return np.array(ordered)
-    halves: list[list[tuple[float, float]]] = []
-    for sequence in (ordered, ordered[::-1]):
-        chain: list[tuple[float, float]] = []
-        for p in sequence:
-            while len(chain) >= 2 and _left_of(chain[-2], chain[-1], p) <= 0.0:
-                chain.pop()
-            chain.append(p)
-        halves.append(chain[:-1])
-    return np.array(halves[0] + halves[1])
-
-
-def _left_of(a: tuple[float, float], b: tuple[float, float], p: tuple[float, float]) -> float:
-    return (b[0] - a[0]) * (p[1] - a[1]) - (b[1] - a[1]) * (p[0] - a[0])
-
-
-def _merged(mesh: Mesh) -> tuple[Floats, Faces]:
-    """Points without repetition (to a micrometre) and the faces that go with them."""
-    shifted = mesh.points - mesh.points[0]
-    _, first, place = np.unique(
-        np.round(shifted, 6), axis=0, return_index=True, return_inverse=True
-    )
-    place = place.ravel()
-    if len(first) == len(mesh.points):
-        return mesh.points, mesh.faces
-    index: list[int] = place.tolist()
-    faces = tuple(tuple(tuple(index[i] for i in loop) for loop in face) for face in mesh.faces)
-    return mesh.points[first], faces
 
 
 def _edge_pairs(faces: Faces) -> NDArray[np.int64]:
@@ -188,137 +130,17 @@ def _axes(axis: Floats, local: Floats) -> Floats:
     return np.array([a, across, frames.cross(a, across)])
 
 
-def _section(turned: Floats, faces: Faces, at: float) -> tuple[Loops, str]:
-    """Outline of the cut at ``at`` along the first axis, and what had to be assumed."""
-    segments = _cut(turned, faces, at)
-    loops = _chained(segments)
-    if loops:
-        return _nested(loops), ""
-    corners = [(c.y, c.z) for pair in segments for c in pair]
-    outer = hull(np.array(corners)) if len(corners) >= 3 else hull(turned[:, 1:])
-    if len(outer) < 3:
-        raise UnreadableShapeError("the body has no cross-section")
-    return (outline.loop(outer.tolist()),), "its faces do not close; convex outline taken"
-
-
-def _cut(turned: Floats, faces: Faces, at: float) -> list[tuple[_Corner, _Corner]]:
-    along = (turned[:, 0] - at).tolist()
-    across = turned[:, 1:].tolist()
-    segments = []
-    for face in faces:
-        corners: list[_Corner] = []
-        for loop in face:
-            before = loop[-1]
-            for here in loop:
-                s, t = along[before], along[here]
-                if (s > 0.0) != (t > 0.0):
-                    # From the lower corner always, so that both faces find the same point.
-                    a, b = (before, here) if before < here else (here, before)
-                    share = along[a] / (along[a] - along[b])
-                    (y, z), (y2, z2) = across[a], across[b]
-                    corners.append(_Corner((a, b), y + share * (y2 - y), z + share * (z2 - z)))
-                before = here
-        if len(corners) == 2:
-            segments.append((corners[0], corners[1]))
-        elif len(corners) > 2:
-            segments.extend(_paired(corners))
-    return segments
-
-
-def _paired(corners: list[_Corner]) -> list[tuple[_Corner, _Corner]]:
-    """Pair the crossings of a face that is not convex, in order along the cutting line."""
-    first = corners[0]
-    far = max(corners, key=lambda c: math.hypot(c.y - first.y, c.z - first.z))
-    dy, dz = far.y - first.y, far.z - first.z
-    ordered = sorted(corners, key=lambda c: c.y * dy + c.z * dz)
-    return list(zip(ordered[::2], ordered[1::2], strict=False))
-
-
-def _chained(segments: list[tuple[_Corner, _Corner]]) -> list[Floats]:
-    """Closed loops from segments; empty where they do not close."""
-    neighbours: dict[tuple[int, int], list[tuple[int, int]]] = defaultdict(list)
-    places: dict[tuple[int, int], tuple[float, float]] = {}
-    for a, b in segments:
-        neighbours[a.edge].append(b.edge)
-        neighbours[b.edge].append(a.edge)
-        places[a.edge] = (a.y, a.z)
-        places[b.edge] = (b.y, b.z)
-    if not segments or any(len(others) != 2 for others in neighbours.values()):
-        return []
-    loops = []
-    unused = set(neighbours)
-    while unused:
-        start = unused.pop()
-        chain = [start]
-        before, here = start, neighbours[start][0]
-        while here != start:
-            unused.discard(here)
-            chain.append(here)
-            one, other = neighbours[here]
-            before, here = here, other if one == before else one
-        if len(chain) >= 3:
-            rows = outline.loop([places[edge] for edge in chain])
-            rows = _without_straight_corners(rows)
-            if len(rows) >= 3 and abs(outline.signed_area(rows)) > 1e-9:
-                loops.append(rows)
-    return loops
-
-
-def _without_straight_corners(rows: Floats) -> Floats:
-    """Drop corners on a straight line between their neighbours (diagonals of triangles)."""
-    kept: list[list[float]] = rows.tolist()
-    size = float(np.abs(rows[:, :2] - rows[0, :2]).max())
-    changed = True
-    while changed and len(kept) > 3:
-        changed = False
-        for i in range(len(kept)):
-            (x0, y0, _), (x1, y1, _), (x2, y2, _) = kept[i - 1], kept[i], kept[(i + 1) % len(kept)]
-            chord = math.hypot(x2 - x0, y2 - y0)
-            height = abs((x1 - x0) * (y2 - y0) - (y1 - y0) * (x2 - x0))
-            if height <= 1e-6 * size * max(chord, 1e-3 * size):
-                del kept[i]
-                changed = True
-                break
-    return np.array(kept)
-
-
-def _nested(loops: list[Floats]) -> Loops:
-    """Loops round material anticlockwise first, then voids clockwise."""
-    solid: list[Floats] = []
-    voids: list[Floats] = []
-    for rows in sorted(loops, key=lambda r: -abs(outline.signed_area(r))):
-        depth = sum(
-            _inside(other[:, :2], float(rows[0, 0]), float(rows[0, 1]))
-            for other in loops
-            if other is not rows
-        )
-        (voids if depth % 2 else solid).append(rows)
-    return tuple(outline.anticlockwise(r) for r in solid) + tuple(
-        outline.clockwise(r) for r in voids
-    )
-
-
-def _inside(ring: Floats, x: float, y: float) -> bool:
-    inside = False
-    x0, y0 = ring[-1].tolist()
-    for x1, y1 in ring.tolist():
-        if (y0 > y) != (y1 > y) and x < x0 + (x1 - x0) * (y - y0) / (y1 - y0):
-            inside = not inside
-        x0, y0 = x1, y1
-    return inside
-
-
 def _line_of_centroids(turned: Floats, faces: Faces, low: float, high: float) -> Floats | None:
     """Centroids of the cuts at five places, or None where a cut does not close."""
     if not faces:
         return None
     rows = []
-    for share in (0.1, 0.3, _HALF_WAY, 0.7, 0.9):
+    for share in (0.1, 0.3, HALF_WAY, 0.7, 0.9):
         at = low + share * (high - low)
-        loops = _chained(_cut(turned, faces, at))
+        loops = closed_cut(turned, faces, at)
         if not loops:
             return None
-        moments = outline.moments(_nested(loops))
+        moments = outline.moments(loops)
         rows.append((at, moments.x, moments.y))
     return np.array(rows)
 
@@ -341,7 +163,7 @@ def _ends(
     hits = []
     for face in faces:
         rings = [turned[list(loop)] for loop in face]
-        if sum(_inside(ring[:, 1:], y, z) for ring in rings) % 2 == 0:
+        if sum(inside(ring[:, 1:], y, z) for ring in rings) % 2 == 0:
             continue
         normal = _normal(rings[0])
         if abs(normal[0]) < 1e-6:
@@ -382,10 +204,10 @@ def _tapered(
         return prism
     sections = []
     for share in (0.02, 0.98):
-        loops = _chained(_cut(turned, faces, low + share * (high - low)))
+        loops = closed_cut(turned, faces, low + share * (high - low))
         if not loops:
             return prism
-        sections.append(recognise(_nested(loops)))
+        sections.append(recognise(loops))
     start, end = (profile_of("", ifc_class, drawn) for drawn in sections)
     middle = prism.profile.moments.area
     change = (end.moments.area - start.moments.area) / middle

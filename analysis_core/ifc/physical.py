@@ -12,23 +12,17 @@ from typing import Any
 from analysis_core.building import Area, AxisMember, Building, Carrier
 from analysis_core.ifc import roles
 from analysis_core.ifc.areas import AreaReader
-from analysis_core.ifc.bodies import Shape
+from analysis_core.ifc.body_items import Shape
 from analysis_core.ifc.elements import Elements
 from analysis_core.ifc.end_releases import NOT_STATED, end_releases
 from analysis_core.ifc.extents import Extent, ExtentReader
 from analysis_core.ifc.frames import Frame, Vector
+from analysis_core.ifc.main_prism import CurvedMemberError
 from analysis_core.ifc.material_choice import Choice
 from analysis_core.ifc.member_notes import note_duplicates, note_section, note_stick
 from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.source import Source
-from analysis_core.ifc.sticks import (
-    CurvedMemberError,
-    Stick,
-    section_matrix,
-    stick_of,
-    upright,
-    with_profile,
-)
+from analysis_core.ifc.sticks import Stick, section_matrix, stick_of, upright, with_profile
 from analysis_core.ifc.unreadable import UnreadableShapeError
 from analysis_core.model import Section
 from analysis_core.settings import Settings

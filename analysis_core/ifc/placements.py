@@ -12,8 +12,9 @@ from typing import Any
 import numpy as np
 
 from analysis_core.ifc import frames
-from analysis_core.ifc.curves import Measures, read_path, sampled
+from analysis_core.ifc.curves import read_path
 from analysis_core.ifc.frames import WORLD, Frame, Vector
+from analysis_core.ifc.paths import Measures, sampled
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
 _DEEPEST_NESTING = 200

@@ -8,17 +8,11 @@ from itertools import pairwise
 from typing import Any
 
 from analysis_core.ifc import outline
-from analysis_core.ifc.curves import (
-    Coordinates,
-    Measures,
-    Path,
-    Segment,
-    closed_loop,
-    read_path,
-    sampled,
-)
+from analysis_core.ifc.curves import read_path
+from analysis_core.ifc.drawn import Drawn
 from analysis_core.ifc.outline import Matrix
-from analysis_core.ifc.profile_outlines import Drawn, draw_parametric
+from analysis_core.ifc.paths import Coordinates, Measures, Path, Segment, closed_loop, sampled
+from analysis_core.ifc.profile_outlines import draw_parametric
 from analysis_core.ifc.recognise import recognise
 from analysis_core.ifc.unreadable import UnreadableShapeError
 

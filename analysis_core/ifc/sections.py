@@ -23,10 +23,10 @@ import numpy as np
 
 from analysis_core.findings import Finding
 from analysis_core.ifc import outline, slices, torsion
-from analysis_core.ifc.curves import Measures
+from analysis_core.ifc.drawn import Drawn
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.outline import IDENTITY, Floats, Loops, Matrix, Moments
-from analysis_core.ifc.profile_outlines import Drawn
+from analysis_core.ifc.paths import Measures
 from analysis_core.ifc.profile_properties import Stated, stated_for
 from analysis_core.ifc.profiles import draw
 from analysis_core.ifc.unreadable import READ_ERRORS, reason_of

@@ -1,0 +1,178 @@
+"""The one prism of a body that makes it a member, and the line through its centroids."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+
+import numpy as np
+
+from analysis_core.ifc import frames
+from analysis_core.ifc.body_items import Curved, Cut, Item, Mesh, Prism
+from analysis_core.ifc.frames import Vector
+from analysis_core.ifc.mesh_cuts import inside
+from analysis_core.ifc.mesh_prisms import mesh_of_prism, prism_of_mesh
+from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.unreadable import UnreadableShapeError
+
+PARALLEL = math.cos(math.radians(2.0))
+
+
+class CurvedMemberError(UnreadableShapeError):
+    """The body or the axis is curved."""
+
+
+def main_prism(
+    items: Sequence[Item], axis: tuple[Vector, Vector] | None
+) -> tuple[Prism, list[str]]:
+    if len(items) == 1 and isinstance(items[0], Prism):
+        found = _lengthwise(items[0], axis)
+        if isinstance(found, Prism):
+            return found, [found.remark] if found.remark else []
+    prisms: list[Prism] = []
+    curved: list[Curved] = []
+    meshes: list[Mesh] = [item for item in items if isinstance(item, Mesh)]
+    for item in items:
+        if isinstance(item, Curved):
+            curved.append(item)
+        elif isinstance(item, Prism):
+            found = _lengthwise(item, axis)
+            prisms.append(found) if isinstance(found, Prism) else curved.append(found)
+    if meshes and not prisms:
+        found = prism_of_mesh(meshes[0] if len(meshes) == 1 else _together(meshes))
+        prisms.append(found) if isinstance(found, Prism) else curved.append(found)
+    if not prisms:
+        if curved:
+            raise CurvedMemberError(_bend(curved[0]))
+        raise UnreadableShapeError("its body has no solid part")
+    volumes = [prism.profile.moments.area * _height(prism) for prism in prisms]
+    main = prisms[int(np.argmax(volumes))]
+    remarks = [main.remark] if main.remark else []
+    others = [
+        v for prism, v in zip(prisms, volumes, strict=True)
+        if prism is not main and v > 0.05 * max(volumes)
+    ]  # fmt: skip
+    if others:
+        remarks.append(
+            f"its body has {len(prisms)} parts; the section is that of the largest, "
+            f"{100.0 * max(volumes) / sum(volumes):.0f} % of the volume"
+        )
+        main = _with_collinear(main, prisms)
+    return main, remarks
+
+
+def _lengthwise(prism: Prism, axis: tuple[Vector, Vector] | None) -> Prism | Curved:
+    """Return the prism, or what it is when seen along its longest direction.
+
+    Plates are exported as beams whose extrusion runs across the thickness.
+    """
+    width, depth = prism.profile.size
+    x, y = frames.length(prism.frame[0:3]), frames.length(prism.frame[3:6])
+    across = max(width * x, depth * y)
+    if frames.length(prism.vector) >= across:
+        return prism
+    if axis is not None:
+        along = frames.unit(frames.minus(axis[1], axis[0]))
+        if abs(frames.dot(along, frames.unit(prism.vector))) > PARALLEL:
+            return prism
+    return prism_of_mesh(mesh_of_prism(prism))
+
+
+def _height(prism: Prism) -> float:
+    """Extent of the prism at right angles to its profile, times what the frame stretches."""
+    normal = frames.cross(prism.frame[0:3], prism.frame[3:6])
+    return abs(frames.dot(normal, prism.vector))
+
+
+def _together(meshes: Sequence[Mesh]) -> Mesh:
+    points: list[Floats] = []
+    faces: list[tuple[tuple[int, ...], ...]] = []
+    count = 0
+    for mesh in meshes:
+        points.append(mesh.points)
+        faces += [tuple(tuple(i + count for i in loop) for loop in face) for face in mesh.faces]
+        count += len(mesh.points)
+    return Mesh(np.vstack(points), tuple(faces), meshes[0].ifc_class)
+
+
+def _with_collinear(main: Prism, prisms: Sequence[Prism]) -> Prism:
+    """Lengthen the main part by others that continue it on the same line."""
+    start = _centroid_line(main)[0]
+    along = frames.unit(main.vector)
+    low, high = 0.0, frames.length(main.vector)
+    reach = 0.5 * math.sqrt(main.profile.moments.area)
+    for other in prisms:
+        if other is main or abs(frames.dot(frames.unit(other.vector), along)) < PARALLEL:
+            continue
+        stations = []
+        for p in _centroid_line(other):
+            arm = frames.minus(p, start)
+            station = frames.dot(arm, along)
+            if frames.length(frames.plus(arm, along, -station)) > reach:
+                break
+            stations.append(station)
+        if len(stations) == 2 and max(stations) > low - 0.05 and min(stations) < high + 0.05:
+            low, high = min(low, *stations), max(high, *stations)
+    shift = frames.plus((0.0, 0.0, 0.0), along, low)
+    frame = main.frame[:9] + frames.plus(main.frame[9:12], shift)
+    return main._replace(
+        frame=frame,
+        vector=(along[0] * (high - low), along[1] * (high - low), along[2] * (high - low)),
+        end_profile=None if (low, high) != (0.0, frames.length(main.vector)) else main.end_profile,
+    )
+
+
+def _bend(item: Curved) -> str:
+    chord = item.points[-1] - item.points[0]
+    size = float(np.linalg.norm(chord))
+    if size <= 1e-9:
+        return f"its body ({item.ifc_class}) is a closed ring"
+    arms = item.points - item.points[0]
+    off = np.linalg.norm(arms - np.outer(arms @ chord / size**2, chord), axis=1).max()
+    return (
+        f"its body ({item.ifc_class}) bends {off * 1e3:.0f} mm off the straight line over "
+        f"{size:.2f} m"
+    )
+
+
+def _centroid_line(prism: Prism) -> tuple[Vector, Vector]:
+    moments = prism.profile.moments
+    start = frames.point(prism.frame, moments.x, moments.y, 0.0)
+    end = frames.plus(start, prism.vector)
+    if prism.end_profile is not None:
+        last = prism.end_profile.moments
+        end = frames.plus(frames.point(prism.frame, last.x, last.y, 0.0), prism.vector)
+    return start, end
+
+
+def body_ends(prism: Prism) -> tuple[Vector, Vector]:
+    """Ends of the centroid line, shortened by the half-spaces taken from the body."""
+    start, end = _centroid_line(prism)
+    low, high = 0.0, 1.0
+    along = frames.minus(end, start)
+    for cut in prism.cuts:
+        low, high = after_cut(cut, start, along, low, high)
+    if high - low < 0.02:
+        return start, end
+    return frames.plus(start, along, low), frames.plus(start, along, high)
+
+
+def after_cut(
+    cut: Cut, start: Vector, along: Vector, low: float, high: float
+) -> tuple[float, float]:
+    """Return the part (``low`` to ``high`` of 0 to 1) of a line that a half-space leaves."""
+    rate = frames.dot(cut.normal, along)
+    if abs(rate) < 1e-3 * frames.length(cut.normal) * frames.length(along):
+        return low, high
+    at = frames.dot(cut.normal, frames.minus(cut.point, start)) / rate
+    if cut.reach is not None and cut.frame is not None:
+        # Only a bounded half-space that holds the line where it cuts shortens the member.
+        probe = at + (0.01 if rate > 0.0 else -0.01)
+        here = frames.point(
+            frames.inverse(cut.frame), *frames.plus(start, along, min(max(probe, 0.0), 1.0))
+        )
+        if not inside(cut.reach, here[0], here[1]):
+            return low, high
+    if rate > 0.0:
+        return (low, min(high, at)) if at > low else (low, high)
+    return (max(low, at), high) if at < high else (low, high)
