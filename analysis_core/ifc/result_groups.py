@@ -22,12 +22,12 @@ import numpy as np
 from analysis_core.ifc import frames
 from analysis_core.ifc.append import Lines
 from analysis_core.ifc.clearing import Retained
-from analysis_core.ifc.curves import Measures as ShapeMeasures
 from analysis_core.ifc.extract import extract
 from analysis_core.ifc.global_ids import global_id
 from analysis_core.ifc.governing import Part
 from analysis_core.ifc.measures import Measures
 from analysis_core.ifc.ours import RESULT_TYPE
+from analysis_core.ifc.paths import Measures as ShapeMeasures
 from analysis_core.ifc.placements import Placements
 from analysis_core.ifc.step_index import StepIndex, reference
 from analysis_core.ifc.step_values import decoded, label, real, references, string
