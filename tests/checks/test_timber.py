@@ -1,0 +1,56 @@
+"""Timber by EN 1995-1-1: durations, slenderness and the worked numbers of a floor joist."""
+
+import pytest
+from designs import C24, rectangle, simple_span
+
+from analysis_core.checks import timber_en
+from analysis_core.checks.working import Figures
+
+FIGURES = Figures(timber_en.FIGURES, {})
+
+
+def test_a_joist_is_checked_with_the_duration_of_its_combination():
+    design = simple_span(rectangle(0.06, 0.2), C24, 4.0, 1.5e3, continuous=True)
+    medium, permanent = (
+        timber_en.check_timber(design, FIGURES, {"U1": duration}, False)
+        for duration in ("medium", "permanent")
+    )
+
+    # By hand: f_m,d = 0.8 · 24 / 1.3 = 14.77 MPa, W = 400 cm³, M_Rd = 5.908 kN·m, M = 3.0 kN·m.
+    assert medium[0].resistance == pytest.approx(5.908e3, rel=1e-3)
+    assert medium[0].use == pytest.approx(3.0 / 5.908, rel=1e-3)
+    assert permanent[0].use == pytest.approx(medium[0].use * 0.8 / 0.6)
+    # Shear: V = 3.0 kN, V_Rd = 2/3 · 0.67 · 60 · 200 · 0.8 · 4 / 1.3 = 13.19 kN.
+    assert medium[1].use == pytest.approx(3.0 / 13.19, rel=1e-3)
+
+
+@pytest.mark.parametrize(
+    ("slender", "factor"),
+    [(0.75, 1.0), (0.7501, 0.9974), (1.4, 0.51), (1.4001, 0.5101), (2.0, 0.25)],
+)
+def test_the_critical_factor_on_both_sides_of_its_limits(slender, factor):
+    assert timber_en.critical_factor(slender) == pytest.approx(factor, abs=3e-4)
+
+
+@pytest.mark.parametrize(
+    ("depth", "glulam", "factor"),
+    [
+        (0.15, False, 1.0),
+        (0.1, False, 1.0845),
+        (0.03, False, 1.3),
+        (0.6, True, 1.0),
+        (0.2, True, 1.1),
+    ],
+)
+def test_shallow_sections_are_stronger_up_to_a_limit(depth, glulam, factor):
+    assert timber_en.size_factor(depth, glulam) == pytest.approx(factor, abs=5e-5)
+
+
+def test_a_slender_beam_without_restraint_loses_strength():
+    free = simple_span(rectangle(0.05, 0.4), C24, 8.0, 1e3)
+    held = simple_span(rectangle(0.05, 0.4), C24, 8.0, 1e3, continuous=True)
+
+    assert (
+        timber_en.check_timber(free, FIGURES, {}, False)[0].resistance
+        < timber_en.check_timber(held, FIGURES, {}, False)[0].resistance
+    )
