@@ -62,6 +62,11 @@ def loop(points: Sequence[Sequence[float]]) -> Floats:
     return _without_repeats(rows)
 
 
+def fingerprint(loops: Sequence[Floats]) -> bytes:
+    """Return bytes that are equal for outlines equal to a nanometre."""
+    return b"|".join((np.round(rows, 9) + 0.0).tobytes() for rows in loops)
+
+
 def chain(points: Sequence[Sequence[float]]) -> Floats:
     """Return rows ``x, y, bulge`` of an open chain, without repeated points."""
     rows = [list(point) for point in points]
@@ -163,9 +168,8 @@ def transformed(loops: Sequence[Floats], matrix: Matrix, x: float = 0.0, y: floa
 def flattened(rows: Floats, chords: int) -> Floats:
     """Return the loop with arcs replaced by chords, ``chords`` to the full turn."""
     points: list[tuple[float, float, float]] = []
-    for (x, y, bulge), (x2, y2, _) in zip(
-        rows.tolist(), np.roll(rows, -1, axis=0).tolist(), strict=True
-    ):
+    corners = rows.tolist()
+    for (x, y, bulge), (x2, y2, _) in pairwise([*corners, corners[0]]):
         points.append((x, y, 0.0))
         if bulge:
             cx, cy, radius, first, sweep = arc_of(x, y, x2, y2, bulge)
@@ -186,9 +190,8 @@ def split_at_extremes(rows: Floats) -> Floats:
     if not rows[:, 2].any():
         return rows
     points: list[tuple[float, float, float]] = []
-    for (x, y, bulge), (x2, y2, _) in zip(
-        rows.tolist(), np.roll(rows, -1, axis=0).tolist(), strict=True
-    ):
+    corners = rows.tolist()
+    for (x, y, bulge), (x2, y2, _) in pairwise([*corners, corners[0]]):
         if not bulge:
             points.append((x, y, 0.0))
             continue
@@ -268,6 +271,11 @@ def rounded(corners: Sequence[tuple[float, float, float]]) -> Floats:
     return _without_repeats(np.array(rows))
 
 
+def following(values: Floats) -> Floats:
+    """Return each row's next one, the first after the last (np.roll, but quick)."""
+    return np.concatenate([values[1:], values[:1]])
+
+
 def _cut_length(corners: Sequence[tuple[float, float, float]], i: int) -> float:
     """Distance from corner ``i`` to where its rounding touches the sides."""
     radius = corners[i][2]
@@ -302,7 +310,7 @@ def _corner_arc(
 def _raw_moments(rows: Floats) -> Floats:
     """Area, ∫x, ∫y, ∫x², ∫y², ∫xy about the origin, signed by the direction of the loop."""
     x, y = rows[:, 0], rows[:, 1]
-    x2, y2 = np.roll(x, -1), np.roll(y, -1)
+    x2, y2 = following(x), following(y)
     cross = x * y2 - x2 * y
     total = np.array(
         [
@@ -367,6 +375,6 @@ def _on_circle(cx: float, cy: float, radius: float, angle: float) -> tuple[float
 def _without_repeats(rows: Floats) -> Floats:
     """Drop vertices that repeat the next one; a bulge between equal points has no length."""
     size = float(np.abs(rows[:, :2] - rows[0, :2]).max(initial=0.0))
-    gap = np.abs(rows[:, :2] - np.roll(rows[:, :2], -1, axis=0)).max(axis=1)
+    gap = np.abs(rows[:, :2] - following(rows[:, :2])).max(axis=1)
     keep = gap > 1e-9 * size
     return rows[keep] if not keep.all() else rows

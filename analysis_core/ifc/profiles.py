@@ -20,30 +20,52 @@ _DEEPEST_NESTING = 8
 MIRRORED: Matrix = ((-1.0, 0.0), (0.0, 1.0))
 
 
-def draw(profile: Any, measures: Measures, depth: int = 0) -> Drawn:
-    """Draw a profile in the axes of the swept area that uses it, in metres.
+class ProfileDrawer:
+    """Draws profiles; outlines that exporters repeat point by point are recognised once."""
 
-    Raises UnreadableShapeError where the profile has no area of its own (only a name, an open
-    curve), is of an unknown class or has impossible dimensions.
-    """
-    if depth > _DEEPEST_NESTING:
-        raise UnreadableShapeError("profiles are nested in a circle")
-    if profile.is_a("IfcParameterizedProfileDef"):
-        drawn = draw_parametric(profile, measures)
-        return _placed(drawn, profile.Position, measures)
-    if profile.is_a("IfcArbitraryClosedProfileDef"):
-        return _arbitrary(profile, measures)
-    if profile.is_a("IfcCenterLineProfileDef"):
-        return _thickened(profile, measures)
-    if profile.is_a("IfcCompositeProfileDef"):
-        return _composite(profile, measures, depth)
-    if profile.is_a("IfcMirroredProfileDef"):
-        # The standard derives the operator: x becomes -x, whatever the file says.
-        return move(draw(profile.ParentProfile, measures, depth + 1), MIRRORED)
-    if profile.is_a("IfcDerivedProfileDef"):
-        matrix, shift = operator_2d(profile.Operator, measures)
-        return move(draw(profile.ParentProfile, measures, depth + 1), matrix, *shift)
-    raise UnreadableShapeError(f"the profile of class {profile.is_a()} encloses no area")
+    def __init__(self, measures: Measures) -> None:
+        self._measures = measures
+        self._recognised: dict[bytes, Drawn] = {}
+
+    def draw(self, profile: Any, depth: int = 0) -> Drawn:
+        """Draw a profile in the axes of the swept area that uses it, in metres.
+
+        Raises UnreadableShapeError where the profile has no area of its own (only a name, an
+        open curve), is of an unknown class or has impossible dimensions.
+        """
+        measures = self._measures
+        if depth > _DEEPEST_NESTING:
+            raise UnreadableShapeError("profiles are nested in a circle")
+        if profile.is_a("IfcParameterizedProfileDef"):
+            return _placed(draw_parametric(profile, measures), profile.Position, measures)
+        if profile.is_a("IfcArbitraryClosedProfileDef"):
+            return self._arbitrary(profile)
+        if profile.is_a("IfcCenterLineProfileDef"):
+            return _thickened(profile, measures)
+        if profile.is_a("IfcCompositeProfileDef"):
+            return _composite([self.draw(part, depth + 1) for part in profile.Profiles])
+        if profile.is_a("IfcMirroredProfileDef"):
+            # The standard derives the operator: x becomes -x, whatever the file says.
+            return move(self.draw(profile.ParentProfile, depth + 1), MIRRORED)
+        if profile.is_a("IfcDerivedProfileDef"):
+            matrix, shift = operator_2d(profile.Operator, measures)
+            return move(self.draw(profile.ParentProfile, depth + 1), matrix, *shift)
+        raise UnreadableShapeError(f"the profile of class {profile.is_a()} encloses no area")
+
+    def _arbitrary(self, profile: Any) -> Drawn:
+        outer = read_path(profile.OuterCurve, self._measures)
+        exact = outer.exact
+        loops = [outline.anticlockwise(closed_loop(outer))]
+        if profile.is_a("IfcArbitraryProfileDefWithVoids"):
+            for curve in profile.InnerCurves:
+                inner = read_path(curve, self._measures)
+                exact = exact and inner.exact
+                loops.append(outline.clockwise(closed_loop(inner)))
+        key = outline.fingerprint(loops)
+        known = self._recognised.get(key)
+        if known is None:
+            known = self._recognised[key] = recognise(tuple(loops), exact=exact)
+        return known
 
 
 def move(drawn: Drawn, matrix: Matrix, x: float = 0.0, y: float = 0.0) -> Drawn:
@@ -110,20 +132,7 @@ def _unit(vector: Sequence[float]) -> tuple[float, float]:
     return vector[0] / norm, vector[1] / norm
 
 
-def _arbitrary(profile: Any, measures: Measures) -> Drawn:
-    outer = read_path(profile.OuterCurve, measures)
-    exact = outer.exact
-    loops = [outline.anticlockwise(closed_loop(outer))]
-    if profile.is_a("IfcArbitraryProfileDefWithVoids"):
-        for curve in profile.InnerCurves:
-            inner = read_path(curve, measures)
-            exact = exact and inner.exact
-            loops.append(outline.clockwise(closed_loop(inner)))
-    return recognise(tuple(loops), exact=exact)
-
-
-def _composite(profile: Any, measures: Measures, depth: int) -> Drawn:
-    parts = [draw(part, measures, depth + 1) for part in profile.Profiles]
+def _composite(parts: Sequence[Drawn]) -> Drawn:
     if len(parts) == 1:
         return parts[0]
     return Drawn(

@@ -28,7 +28,7 @@ from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.outline import IDENTITY, Floats, Loops, Matrix, Moments
 from analysis_core.ifc.paths import Measures
 from analysis_core.ifc.profile_properties import Stated, stated_for
-from analysis_core.ifc.profiles import draw
+from analysis_core.ifc.profiles import ProfileDrawer
 from analysis_core.ifc.unreadable import READ_ERRORS, reason_of
 from analysis_core.model import Section
 
@@ -52,7 +52,8 @@ class SectionReader:
     """Reads profiles of one file, each once; thousands of members share a few profiles."""
 
     def __init__(self, measures: Measures, stated: Mapping[int, Stated] | None = None) -> None:
-        self._measures = measures
+        self._drawer = ProfileDrawer(measures)
+        self._alike: dict[tuple[str, bytes], Profile] = {}
         self._stated = stated or {}
         self._profiles: dict[int, Profile | None] = {}
         self._findings: dict[int, tuple[Finding, ...]] = {}
@@ -97,7 +98,8 @@ class SectionReader:
             return known
         turned = tuple(round(value, 9) for row in matrix for value in row)
         stated = self._stated.get(entity.id()) if entity is not None else None
-        shared = (_fingerprint(profile), turned, id(stated) if stated else None)
+        outlined = outline.fingerprint(profile.drawn.loops)
+        shared = (profile.name, profile.ifc_class, outlined, turned, id(stated) if stated else None)
         section = self._sections.get(shared)
         if section is None:
             section = section_of(profile, matrix)
@@ -110,8 +112,8 @@ class SectionReader:
 
     def _read(self, entity: Any) -> Profile | None:
         try:
-            drawn = draw(entity, self._measures)
-            profile = profile_of(_name(entity), entity.is_a(), drawn)
+            drawn = self._drawer.draw(entity)
+            profile = self._profile_of(_name(entity), entity.is_a(), drawn)
         except READ_ERRORS as error:
             self._reasons[entity.id()] = reason_of(error)
             if entity.id() not in self._stated:
@@ -125,6 +127,13 @@ class SectionReader:
             notes.extend(stated.compared(_name(entity) or entity.is_a(), profile.moments))
         self._findings[entity.id()] = tuple(notes)
         return profile
+
+    def _profile_of(self, name: str, ifc_class: str, drawn: Drawn) -> Profile:
+        key = (ifc_class, outline.fingerprint(drawn.loops))
+        known = self._alike.get(key)
+        if known is None:
+            known = self._alike[key] = profile_of(name, ifc_class, drawn)
+        return known if known.name == name else known._replace(name=name)
 
 
 def read_section(profile: Any, units: FileUnits) -> tuple[Section | None, list[Finding]]:
@@ -206,11 +215,6 @@ def _source(profile: Profile) -> str:
     if "Arbitrary" in profile.ifc_class:
         return f"polygon of {len(profile.corners)} corners"
     return f"outline of {profile.ifc_class}"
-
-
-def _fingerprint(profile: Profile) -> tuple[object, ...]:
-    rounded = b"|".join(np.round(rows, 9).tobytes() for rows in profile.drawn.loops)
-    return profile.name, profile.ifc_class, rounded
 
 
 def _uniform_scale(matrix: Matrix) -> float:

@@ -14,7 +14,7 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.ifc.outline import Floats, arc_of, split_at_extremes
+from analysis_core.ifc.outline import Floats, arc_of, following, split_at_extremes
 
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)  # type: ignore[no-untyped-call]
 # Column j of the powers belongs to the power j of u in -1..1.
@@ -154,7 +154,7 @@ def _reach(levels: Floats, y: float, y2: float) -> tuple[int, int]:
 def _edges(loops: Sequence[Floats]) -> tuple[Floats, Floats, Floats]:
     parts = [split_at_extremes(rows) for rows in loops]
     starts = np.concatenate([rows[:, :2] for rows in parts])
-    ends = np.concatenate([np.roll(rows[:, :2], -1, axis=0) for rows in parts])
+    ends = np.concatenate([following(rows[:, :2]) for rows in parts])
     return starts, ends, np.concatenate([rows[:, 2] for rows in parts])
 
 

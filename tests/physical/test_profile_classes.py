@@ -10,7 +10,7 @@ from body_makers import Maker
 
 from analysis_core.ifc.file_units import read_units
 from analysis_core.ifc.outline import flattened
-from analysis_core.ifc.profiles import draw
+from analysis_core.ifc.profiles import ProfileDrawer
 from analysis_core.ifc.sections import SectionReader, measures_of, read_section
 
 PARAMETRIC = {
@@ -71,7 +71,7 @@ def units_of(maker):
 
 
 def drawn(maker, profile):
-    return draw(profile, measures_of(units_of(maker)))
+    return ProfileDrawer(measures_of(units_of(maker))).draw(profile)
 
 
 def corners_by_library(maker, profile):
