@@ -56,7 +56,8 @@ def _overhang(draft: Draft, joint: DraftJoint) -> tuple[float | None, float | No
         for j in draft.joints
         if j.vertical > FREE
     )
-    if len(places) < 2 and not any(j.rotation > FREE for j in draft.joints):
+    fixed = any(j.rotation > FREE for j in draft.joints)
+    if not places or (len(places) < 2 and not fixed):
         return None, None
     return places[0], places[1] - places[0] if len(places) > 1 else None
 

@@ -13,7 +13,7 @@ from analysis_core.idealise.bearing_supports import support_chains
 from analysis_core.idealise.build import build
 from analysis_core.idealise.cases import canonical, cases_of, combinations_of, with_used
 from analysis_core.idealise.clear_spans import measure_clear
-from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.draft import Bar, Draft
 from analysis_core.idealise.free_ends import explain_free_ends
 from analysis_core.idealise.job_actions import put_job_actions
 from analysis_core.idealise.job_conditions import (
@@ -164,9 +164,15 @@ def _seat_of(rest: Rest) -> tuple[int, float]:
         index = carrier.joint_of[rest.at]
         number, bar = next((n, b) for n, b in enumerate(carrier.bars) if index in (b.start, b.end))
         return number, 0.0 if bar.start == index else carrier.length(bar)
-    for number, bar in enumerate(carrier.bars):
-        low, high = sorted((bar.station_start, bar.station_end))
-        if bar.member.global_id == rest.member and low - 1e-6 <= rest.station <= high + 1e-6:
-            share = (rest.station - bar.station_start) / (bar.station_end - bar.station_start)
-            return number, min(max(share, 0.0), 1.0) * carrier.length(bar)
-    raise ValueError(f"member {rest.member} has no bar at {rest.station} m in {carrier.mark}")
+    # A place over a bearing between clear spans, or past the last bearing: the nearest end.
+    number, bar = min(
+        ((n, b) for n, b in enumerate(carrier.bars) if b.member.global_id == rest.member),
+        key=lambda item: _beyond(item[1], rest.station),
+    )
+    share = (rest.station - bar.station_start) / (bar.station_end - bar.station_start)
+    return number, min(max(share, 0.0), 1.0) * carrier.length(bar)
+
+
+def _beyond(bar: Bar, station: float) -> float:
+    low, high = sorted((bar.station_start, bar.station_end))
+    return max(low - station, station - high, 0.0)
