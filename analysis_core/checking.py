@@ -125,8 +125,8 @@ def _checked(
 def restraints(line: Line, member: Member, model: LineModel, settings: Settings) -> Restraints:
     """Return where the flanges of a member are held sideways, with the reason.
 
-    Both flanges at supports (taken as forked bearings, common practice), the top flange where
-    another line bears on this one, and what the job file states.
+    Both flanges at the ends (taken as forked bearings, common practice), the top flange where
+    another line bears on this one or a slab lies on it, and what the job file states.
     """
     length = member.length
     ends = {0.0, length}
@@ -139,7 +139,10 @@ def restraints(line: Line, member: Member, model: LineModel, settings: Settings)
                 f"top flange at {transfer.position:.2f} m, where {transfer.from_line} bears"
             )
     bottom = set(ends)
-    top_all = bottom_all = False
+    slab = model.held_by.get(member.element, "")
+    top_all, bottom_all = bool(slab), False
+    if slab:
+        reasons.append(f"top flange all along by slab {slab}")
     for setting in settings.checks.restraints:
         if not _selects(setting.on, line, member, model):
             continue

@@ -127,6 +127,10 @@ def _balance_options(commands: Any) -> None:
         help="print the distribution table of each chosen line and case",
     )  # fmt: skip
     command.add_argument(
+        "--checks", action="store_true",
+        help="also check the resistance of the members, clause by clause",
+    )  # fmt: skip
+    command.add_argument(
         "--stations", type=_station_count, default=21, metavar="N",
         help="stations per span in the JSON, ends included (default 21)",
     )  # fmt: skip
@@ -196,11 +200,21 @@ def _balance(options: argparse.Namespace) -> int:
     outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
     units = display_units(settings.display.system, settings.display.units)
     text = balance_text(outcome, units)
+    checked = None
+    if options.checks:
+        from analysis_core.checks_report import checks_text
+
+        checked = pipeline.checks(outcome, settings)
+        text += "\n\n" + checks_text(outcome, checked, units)
     if options.record:
         from analysis_core.record_text import record_text
 
         text = record_text(pipeline.records(outcome), units) + "\n\n" + text
-    _put(options, lambda: pipeline.document(outcome, stations=options.stations), text)
+    _put(
+        options,
+        lambda: pipeline.document(outcome, stations=options.stations, checks=checked),
+        text,
+    )
     return _status(outcome)
 
 

@@ -361,6 +361,8 @@ class LineModel:
     title: str = ""
     names: Mapping[str, str] = field(default_factory=dict)
     """Name by GlobalId of everything that lines and findings refer to."""
+    held_by: Mapping[str, str] = field(default_factory=dict)
+    """Name of the slab that holds a member's top sideways all along, by the member's GlobalId."""
 
 
 def _check_numbering(line: Line) -> None:

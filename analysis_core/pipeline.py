@@ -7,7 +7,7 @@ it and nothing else.
 from __future__ import annotations
 
 import difflib
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 from datetime import datetime
 from pathlib import Path
@@ -26,10 +26,12 @@ from analysis_core.results import LineResult, Outcome
 from analysis_core.revision import Reconciliation, marks_before
 from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
+from analysis_core.slab_restraint import held_by_slabs
 from analysis_core.solving import Memory, solve_lines
 from analysis_core.units import display_units
 
 if TYPE_CHECKING:
+    from analysis_core.checking import MemberChecks
     from analysis_core.ifc.writer import PostReport
     from analysis_core.sheet.html import Markup
 
@@ -107,7 +109,12 @@ def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ())
     """Idealise what was read.  Raises JobError."""
     model = idealise.idealise(reading.building, settings)
     findings = tuple(dict.fromkeys((*reading.findings, *model.findings)))
-    model = replace(model, findings=findings, names=_names(reading.building))
+    model = replace(
+        model,
+        findings=findings,
+        names=_names(reading.building),
+        held_by=held_by_slabs(reading.building),
+    )
     _check_marks(model, only)
     return Survey(
         reading.file,
@@ -198,11 +205,29 @@ def post(
     return writer.post(source, target, outcome, analysis_model=analysis_model, progress=progress)
 
 
-def document(outcome: Outcome, *, stations: int = 21) -> dict[str, Any]:
-    """Return the results file as plain data."""
+def checks(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks, ...]]:
+    """Return the checks of the members of each balanced line by its mark.  Raises JobError."""
+    from analysis_core.checking import check_lines
+
+    return check_lines(outcome, settings)
+
+
+def document(
+    outcome: Outcome,
+    *,
+    stations: int = 21,
+    checks: Mapping[str, tuple[MemberChecks, ...]] | None = None,
+) -> dict[str, Any]:
+    """Return the results file as plain data, with the checks of members where given."""
     from analysis_core.results_file import results_document
 
-    return results_document(outcome, stations=stations)
+    data = results_document(outcome, stations=stations)
+    if checks is not None:
+        from analysis_core.checks_report import checks_data
+
+        for line in data["lines"]:
+            line["checks"] = checks_data(checks.get(line["mark"], ()))
+    return data
 
 
 def records(outcome: Outcome, cases: Sequence[str] = ()) -> Iterator[DistributionRecord]:
