@@ -131,6 +131,10 @@ def _balance_options(commands: Any) -> None:
         help="also check the resistance of the members, clause by clause",
     )  # fmt: skip
     command.add_argument(
+        "--issues", metavar="FILE.bcf",
+        help="write findings and failed checks as a BCF file, for any coordination viewer",
+    )  # fmt: skip
+    command.add_argument(
         "--stations", type=_station_count, default=21, metavar="N",
         help="stations per span in the JSON, ends included (default 21)",
     )  # fmt: skip
@@ -206,6 +210,8 @@ def _balance(options: argparse.Namespace) -> int:
 
         checked = pipeline.checks(outcome, settings)
         text += "\n\n" + checks_text(outcome, checked, units)
+    if options.issues:
+        _write_bytes(Path(options.issues), pipeline.issues(outcome, checked))
     if options.record:
         from analysis_core.record_text import record_text
 
@@ -300,6 +306,13 @@ def _put(options: argparse.Namespace, document: Callable[[], Any], text: str) ->
 def _write(path: Path, text: str) -> None:
     try:
         path.write_text(text, encoding="utf-8")
+    except OSError as error:
+        raise JobError(f"'{path}' cannot be written: {error.strerror or error}.") from None
+
+
+def _write_bytes(path: Path, data: bytes) -> None:
+    try:
+        path.write_bytes(data)
     except OSError as error:
         raise JobError(f"'{path}' cannot be written: {error.strerror or error}.") from None
 

@@ -278,6 +278,13 @@ def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     )
 
 
+def issues(outcome: Outcome, checks: Mapping[str, tuple[MemberChecks, ...]] | None = None) -> bytes:
+    """Return findings and failed checks as a BCF file."""
+    from analysis_core.issues import bcf_bytes, issues_of
+
+    return bcf_bytes(outcome, issues_of(outcome, checks))
+
+
 def job_text(found: Survey, settings: Settings) -> str:
     """Return a starting job file for a survey, as YAML text."""
     from analysis_core.job_out import job_text as text
