@@ -14,6 +14,7 @@ from analysis_core.stiffness_check.arrays import gather
 from analysis_core.stiffness_check.elimination import SingularError, solve_alone
 from analysis_core.stiffness_check.equations import equations
 from analysis_core.stiffness_check.pattern import Pattern, numbering
+from analysis_core.stiffness_check.plain_check import plain_difference
 from analysis_core.stiffness_check.solution import (
     Solved,
     line_pattern,
@@ -23,6 +24,8 @@ from analysis_core.stiffness_check.solution import (
 
 Floats = NDArray[np.float64]
 
+_FEW = 8
+"""Fewer lines than this are checked one by one."""
 _NUMBERS = 1_500_000
 """Entries of the lines that are solved together, at most: about what a cache holds."""
 _DOUBTFUL = 1e-11
@@ -41,11 +44,14 @@ def largest_difference(solution: LineSolution) -> float:
     equilibrium alone does not settle all of them (two rigid horizontal supports in a row).
     Infinite where the independent method refuses the line.
     """
-    return _alone(solution)
+    value = plain_difference(solution)
+    return value if value is not None and value <= _DOUBTFUL else _alone(solution)
 
 
 def largest_differences(solutions: Sequence[LineSolution]) -> list[float]:
     """Return ``largest_difference`` of many solutions; lines of one pattern go together."""
+    if len(solutions) < _FEW:
+        return [largest_difference(solution) for solution in solutions]
     found = [0.0] * len(solutions)
     groups: dict[tuple[Pattern, int], list[int]] = {}
     for place, solution in enumerate(solutions):
