@@ -13,7 +13,7 @@ from analysis_core.idealise.bearing_supports import support_chains
 from analysis_core.idealise.build import build
 from analysis_core.idealise.cases import canonical, cases_of, combinations_of, with_used
 from analysis_core.idealise.clear_spans import measure_clear
-from analysis_core.idealise.draft import Bar, Draft
+from analysis_core.idealise.draft import Bar
 from analysis_core.idealise.free_ends import explain_free_ends
 from analysis_core.idealise.job_actions import put_job_actions
 from analysis_core.idealise.job_conditions import (
@@ -26,7 +26,7 @@ from analysis_core.idealise.log import Log
 from analysis_core.idealise.physical import physical_scheme, put_legs
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.properties import PropertyTable
-from analysis_core.idealise.scheme import Rest, Scheme, fault_fallen
+from analysis_core.idealise.scheme import Rest, Scheme, fault_fallen, report_on_faulty
 from analysis_core.idealise.selectors import Chooser
 from analysis_core.idealise.self_weight import put_self_weight, weight_cases
 from analysis_core.idealise.standing_columns import let_columns_stand
@@ -59,7 +59,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
     if building.route == "physical":
         physical = physical_scheme(building, settings, chooser, log)
         scheme = physical.scheme
-        chooser.marks = _marks(scheme.drafts)
+        chooser.know(scheme.drafts)
         put_job_supports(scheme.drafts, settings, chooser, log)
         support_chains(physical, settings, log)
         meetings.let_carry(physical, table, settings.tolerances, log)
@@ -71,12 +71,13 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
             put_legs(physical, settings, table, log)
     else:
         scheme = analytical_scheme(building, settings, log)
-        chooser.marks = _marks(scheme.drafts)
+        chooser.know(scheme.drafts)
         put_job_supports(scheme.drafts, settings, chooser, log)
         fault_leaning(scheme.drafts, settings.tolerances)
         analytical.let_carry(scheme, building, table, log)
     put_job_releases(scheme.drafts, settings, chooser, log)
     fault_fallen(scheme.drafts)
+    report_on_faulty(scheme, table, log)
 
     members = {member.global_id: member for member in building.members}
     placer = Placer(scheme.drafts)
@@ -113,14 +114,6 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         findings=building.findings + log.findings,
         title=settings.title or building.name,
     )
-
-
-def _marks(drafts: list[Draft]) -> dict[str, tuple[str, ...]]:
-    marks: dict[str, tuple[str, ...]] = {}
-    for draft in drafts:
-        for element in draft.elements:
-            marks[element] = (*marks.get(element, ()), draft.mark)
-    return marks
 
 
 def _lines(

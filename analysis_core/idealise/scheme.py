@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 
 from analysis_core.idealise.carrying import Body, Contact, standing
 from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.log import Log, listed
 from analysis_core.idealise.properties import PropertyTable
 from analysis_core.model import FREE
 
@@ -67,6 +68,28 @@ def fault_fallen(drafts: Iterable[Draft]) -> None:
     for draft in drafts:
         if draft.mark not in upright:
             _fault(draft)
+
+
+def report_on_faulty(scheme: Scheme, table: PropertyTable, log: Log) -> None:
+    """Warn of lines that rest on one that cannot be analysed."""
+    faulty = {
+        draft.mark
+        for draft in scheme.drafts
+        if draft.faults or any(table.of(bar.member).fault for bar in draft.bars)
+    }
+    resting: dict[str, dict[str, None]] = {}
+    for rest in scheme.rests:
+        if rest.carrier.mark in faulty and rest.carried.mark not in faulty:
+            resting.setdefault(rest.carrier.mark, {})[rest.carried.mark] = None
+    for mark, carried in resting.items():
+        log.add(
+            "warning",
+            "carrier-not-analysed",
+            f"{listed(carried)} rest on line {mark}, which cannot be analysed; they are analysed "
+            f"as if it held them, and what they hand to it goes nowhere.",
+            (),
+            mark,
+        )
 
 
 def _fault(draft: Draft) -> None:

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable
 from fnmatch import fnmatchcase
 
 from analysis_core.building import Area, AxisMember, Carrier, Connection
+from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.log import Log
 from analysis_core.settings import Selector
 
@@ -14,21 +15,28 @@ _CLASS_SUFFIX = "standardcase"
 
 
 class Chooser:
-    """Tells whether a selector chooses an element, and remembers which selectors never did.
-
-    ``marks`` gives the lines of each member by GlobalId; it is filled once the lines are known.
-    """
+    """Tells whether a selector chooses an element, and remembers which selectors never did."""
 
     def __init__(self) -> None:
-        self.marks: Mapping[str, tuple[str, ...]] = {}
+        self._marks: dict[str, tuple[str, ...]] = {}
+        self._storeys: dict[str, str] = {}
         self._used: dict[str, bool] = {}
         self._selectors: dict[str, Selector] = {}
+
+    def know(self, drafts: Iterable[Draft]) -> None:
+        """Learn the marks of the lines in which members lie, and their storeys."""
+        for draft in drafts:
+            for element in draft.elements:
+                self._marks[element] = (*self._marks.get(element, ()), draft.mark)
+                if draft.storey:
+                    self._storeys[element] = draft.storey
 
     def chooses(self, selector: Selector, element: Chosen, *, where: str) -> bool:
         """Return whether ``selector`` chooses ``element``; ``where`` names it in a finding."""
         self._used.setdefault(where, False)
         self._selectors[where] = selector
-        if not matches(selector, element, self.marks.get(element.global_id, ())):
+        key = element.global_id
+        if not matches(selector, element, self._marks.get(key, ()), self._storeys.get(key, "")):
             return False
         self._used[where] = True
         return True
@@ -51,8 +59,13 @@ class Chooser:
             )
 
 
-def matches(selector: Selector, element: Chosen, marks: Iterable[str] = ()) -> bool:
-    """Return whether every pattern that the selector states fits the element."""
+def matches(
+    selector: Selector, element: Chosen, marks: Iterable[str] = (), storey: str = ""
+) -> bool:
+    """Return whether every pattern that the selector states fits the element.
+
+    ``marks`` and ``storey`` are those of its lines; a storey of its own comes first.
+    """
     if selector.global_ids and element.global_id not in selector.global_ids:
         own = getattr(element, "element", None)  # the physical element that it stands for
         if own is None or own not in selector.global_ids:
@@ -62,7 +75,7 @@ def matches(selector: Selector, element: Chosen, marks: Iterable[str] = ()) -> b
         (selector.name, element.name),
         (selector.type_name, getattr(element, "type_name", "")),
         (selector.material, material.name if material else ""),
-        (selector.storey, getattr(element, "storey", None) or ""),
+        (selector.storey, getattr(element, "storey", None) or storey),
     )
     if not all(_fits(pattern, text) for pattern, text in checks):
         return False

@@ -361,3 +361,16 @@ def test_secondaries_stated_as_rigid_run_on_through_the_primary():
     assert spans(line) == [5.0, 4.0]
     assert line.joints[1].element == "P"
     assert [t.to_line for t in found.transfers] != []
+
+
+def test_rafters_on_a_ridge_that_nothing_holds_are_told_so():
+    carriers = [wall("W", (-0.1, -3.0, 0.0), (0.1, 9.0, Z - 0.2))]
+    ridge = beam("R", (4.0, -3.0, Z - 0.4), (4.0, 9.0, Z - 0.4))
+    rafters = [beam(f"B{y}", (0.0, y, Z), (4.0, y, Z)) for y in (0.0, 5.0)]
+    found = idealise(house([ridge, *rafters], carriers), Settings())
+    ridge_line = next(line for line in found.lines if line.elements == ("R",))
+    told = finding(found, "carrier-not-analysed")
+
+    assert ridge_line.fault
+    assert told.line == ridge_line.mark
+    assert [line.fault for line in found.lines if line is not ridge_line] == ["", ""]
