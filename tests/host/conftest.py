@@ -50,12 +50,14 @@ def in_freecad(tmp_path, request):
         scale: str = "1",
         window: bool = True,
         style_sheet: str = "",
+        language: str = "English",
         **environment,
     ) -> dict:
         home = tmp_path / "home"
         home.mkdir(exist_ok=True)
         preferences = (HERE / "user.cfg").read_text(encoding="utf-8")
-        (home / "user.cfg").write_text(preferences.replace("STYLE_SHEET", style_sheet))
+        preferences = preferences.replace("STYLE_SHEET", style_sheet)
+        (home / "user.cfg").write_text(preferences.replace("LANGUAGE", language))
         result = tmp_path / "result.json"
         result.unlink(missing_ok=True)
         log = tmp_path / "log.txt"

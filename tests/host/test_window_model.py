@@ -131,3 +131,12 @@ def test_an_earlier_revision_is_compared_line_by_line(in_freecad):
     assert any("reactions it receives" in reason for reason in found["reasons"])
     assert found["line"] == found["first"]
     assert found["dashed"] > 0  # the curves of the earlier revision stand beside
+
+
+def test_the_desk_speaks_another_language(in_freecad):
+    found = in_freecad("scenes_model:language", language="German")
+
+    assert found["tabs"][0] == "Trägerzüge"
+    assert "3 Felder" in found["title"]
+    assert "Querkraft" in found["words"]
+    assert found["states"] == ["● ausgeglichen"]

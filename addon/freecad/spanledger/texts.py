@@ -8,11 +8,41 @@ from __future__ import annotations
 
 import FreeCAD
 
+from .present import words
 from .qt import QtCore
 
 CONTEXT = "Spanledger"
 translate = FreeCAD.Qt.translate
 QT_TRANSLATE_NOOP = QtCore.QT_TRANSLATE_NOOP
+
+
+words.use(lambda text: str(translate(CONTEXT, text)))
+
+
+# What the core says in single words, shown here as well.
+CORE_WORDS = (
+    words.noop("distribution factor"),
+    words.noop("carry-over factor"),
+    words.noop("fixed-end moment"),
+    words.noop("with known ends set"),
+    words.noop("carried over"),
+    words.noop("sum"),
+    words.noop("exact"),
+    words.noop("no support"),
+    words.noop("permanent"),
+    words.noop("imposed"),
+    words.noop("snow"),
+    words.noop("wind"),
+    words.noop("temperature"),
+    words.noop("settlement"),
+    words.noop("other"),
+    words.noop("Reading"),
+    words.noop("Solving"),
+    words.noop("Verifying"),
+    words.noop("Enveloping"),
+    words.noop("Posting"),
+    words.noop("moment"),
+)
 
 
 def tr(text: str) -> str:

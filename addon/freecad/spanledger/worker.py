@@ -10,6 +10,7 @@ from typing import Any
 import FreeCAD
 
 from .qt import QtCore, Signal
+from .texts import translate
 
 Progress = Callable[[str, float], None]
 
@@ -47,16 +48,21 @@ class Work(QtCore.QThread):
         except AnalysisError as error:
             self.failed.emit(str(error))
         except MemoryError:
-            self.failed.emit("The model does not fit into memory; close other work or split it.")
+            text = translate(
+                "Spanledger", "The model does not fit into memory; close other work or split it."
+            )
+            self.failed.emit(text)
         except OSError as error:
             where = f"'{error.filename}': " if error.filename else ""
             self.failed.emit(f"{where}{error.strerror or error}.")
         except Exception as error:  # the host must stay up, whatever a file does to us
             FreeCAD.Console.PrintLog(traceback.format_exc())
-            self.failed.emit(
-                f"Spanledger met something it does not handle ({type(error).__name__}). Nothing "
-                f"was changed. Please report it with the model; the report view's log has more."
+            text = translate(
+                "Spanledger",
+                "Spanledger met something it does not handle ({kind}). Nothing was changed. "
+                "Please report it with the model; the report view's log has more.",
             )
+            self.failed.emit(text.format(kind=type(error).__name__))
         else:
             if self._stop:
                 self.cancelled.emit()

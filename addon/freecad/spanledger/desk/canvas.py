@@ -11,7 +11,7 @@ from ..present.layout import lay_out, least_height
 from ..present.look import Palette, palette_for
 from ..present.strip import Strip, values_at
 from ..qt import Qt, QtCore, QtGui, QtWidgets, Signal
-from ..texts import translate
+from ..texts import tr, translate
 
 _ALIGN = {
     "left": Qt.AlignmentFlag.AlignLeft,
@@ -152,7 +152,7 @@ class Canvas(QtWidgets.QWidget):
         painter.drawLine(QtCore.QPointF(x, 0.0), QtCore.QPointF(x, float(self.height())))
         rows = [f"x = {self.units.text(self.cursor, 'length')}"]
         rows += [
-            f"{name}: {words}" for name, words in values_at(self.strip, self.cursor, self.units)
+            f"{tr(name)}: {words}" for name, words in values_at(self.strip, self.cursor, self.units)
         ]
         _paint_box(painter, palette, rows, x, self.rect())
 

@@ -42,7 +42,7 @@ def button(name: str, text: str, tip: str = "") -> Any:
 def facts_text(facts: Sequence[tuple[str, str]]) -> str:
     """Return facts as rich text; whatever came from a model is escaped."""
     rows = [
-        f"<tr><td style='padding-right:8px'><i>{_escaped(tr(name))}</i></td>"
+        f"<tr><td style='padding-right:8px'><i>{_escaped(name)}</i></td>"
         f"<td>{_escaped(words)}</td></tr>"
         for name, words in facts
     ]

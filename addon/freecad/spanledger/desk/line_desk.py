@@ -9,6 +9,7 @@ from analysis_core.units import DisplayUnits
 from ..present.diagrams import View
 from ..present.shades import WAYS
 from ..present.strip import Strip
+from ..present.words import noop
 from ..qt import Qt, QtCore, QtWidgets, Signal
 from ..texts import tr, translate
 from .canvas import Canvas
@@ -91,7 +92,8 @@ class LineDesk(QtWidgets.QWidget):
         blocker = QtCore.QSignalBlocker(self.view)
         self.view.clear()
         for view in views:
-            self.view.addItem(f"{tr(_KINDS[view.kind])}: {view.name}")
+            name = tr(view.name) if view.kind == "envelope" else view.name
+            self.view.addItem(f"{tr(_KINDS[view.kind])}: {name}")
         names = [(view.kind, view.name) for view in views]
         if kept is not None and (kept.kind, kept.name) in names:
             self.view.setCurrentIndex(names.index((kept.kind, kept.name)))
@@ -128,5 +130,9 @@ def _scrolled(widget: Any) -> Any:
     return area
 
 
-_WAYS = {"plain": "alike", "state": "by state", "change": "by change"}
-_KINDS = {"envelope": "Envelope", "combination": "Combination", "case": "Case"}
+_WAYS = {"plain": noop("alike"), "state": noop("by state"), "change": noop("by change")}
+_KINDS = {
+    "envelope": noop("Envelope"),
+    "combination": noop("Combination"),
+    "case": noop("Case"),
+}

@@ -9,23 +9,25 @@ from analysis_core.revision import LineChange, Reconciliation
 from analysis_core.tables import safe
 from analysis_core.units import DisplayUnits
 
+from .words import noop, say
+
 # Told apart by shape, not by colour alone.
 GLYPHS = {
-    "unchanged": "=",
-    "changed": "≠",
-    "new": "+",
-    "gone": "−",
-    "split": "Y",
-    "merged": "⅄",
-    "regrouped": "⇄",
+    noop("unchanged"): "=",
+    noop("changed"): "≠",
+    noop("new"): "+",
+    noop("gone"): "−",
+    noop("split"): "Y",
+    noop("merged"): "⅄",
+    noop("regrouped"): "⇄",
 }
 _EFFECTS = (
-    ("sagging", "moment"),
-    ("hogging", "moment"),
-    ("shear", "force"),
-    ("deflection", "deflection"),
-    ("reaction_max", "force"),
-    ("reaction_min", "force"),
+    ("sagging", noop("sagging"), "moment"),
+    ("hogging", noop("hogging"), "moment"),
+    ("shear", noop("shear"), "force"),
+    ("deflection", noop("deflection"), "deflection"),
+    ("reaction_max", noop("largest reaction"), "force"),
+    ("reaction_min", noop("smallest reaction"), "force"),
 )
 
 
@@ -48,9 +50,13 @@ def change_rows(found: Reconciliation, units: DisplayUnits) -> list[ChangeRow]:
 def summary(found: Reconciliation) -> str:
     """Return how much changed, in a sentence."""
     changed = sum(change.state != "unchanged" for change in found.changes)
-    return (
-        f"{safe(found.before.file)} to {safe(found.after.file)}: {changed} of "
-        f"{len(found.changes)} lines changed; {len(found.solved_again)} solved again."
+    return say(
+        "{before} to {after}: {changed} of {all} lines changed; {again} solved again.",
+        before=safe(found.before.file),
+        after=safe(found.after.file),
+        changed=changed,
+        all=len(found.changes),
+        again=len(found.solved_again),
     )
 
 
@@ -71,11 +77,10 @@ def _detail(change: LineChange, units: DisplayUnits) -> str:
     lines = [safe(reason) for reason in change.reasons]
     old, new = change.effects_before, change.effects_after
     if old is not None and new is not None:
-        for name, quantity in _EFFECTS:
+        for name, words, quantity in _EFFECTS:
             a, b = getattr(old, name), getattr(new, name)
             if units.number(a, quantity) != units.number(b, quantity):
                 lines.append(
-                    f"{name.replace('_', ' ')}: {units.number(a, quantity)} → "
-                    f"{units.text(b, quantity)}"
+                    f"{say(words)}: {units.number(a, quantity)} → {units.text(b, quantity)}"
                 )
     return "\n".join(lines)

@@ -15,8 +15,10 @@ from analysis_core.job_edit import entries, with_entry, with_replaced, with_valu
 from analysis_core.model import Line
 from analysis_core.units import DisplayUnits, parse_quantity
 
-CONDITIONS = ("pinned", "fixed", "guided", "free")
-SHAPES = ("uniform", "point", "moment")
+from .words import noop
+
+CONDITIONS = (noop("pinned"), noop("fixed"), noop("guided"), noop("free"))
+SHAPES = (noop("uniform"), noop("point"), noop("moment"))
 _QUANTITY = {"uniform": "line load", "point": "force", "moment": "moment"}
 _SAME_PLACE = 1e-6  # m
 

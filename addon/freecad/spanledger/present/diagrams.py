@@ -15,9 +15,12 @@ from numpy.typing import NDArray
 from analysis_core.model import Combination
 from analysis_core.results import LineEnvelope, LineResult, Outcome
 
+from .words import noop, say
+
 Floats = NDArray[np.float64]
 Quantity = Literal["moment", "shear", "deflection"]
 STATIONS = 21
+LIMIT_STATES = (noop("strength"), noop("serviceability"))
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,7 +37,9 @@ class View:
     @property
     def title(self) -> str:
         """Return the words for it."""
-        return f"{self.name} envelope" if self.kind == "envelope" else self.name
+        if self.kind == "envelope":
+            return say("{limit_state} envelope", limit_state=say(self.name))
+        return self.name
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -53,9 +58,7 @@ class Ordinates:
 def views_of(outcome: Outcome) -> list[View]:
     """Return what can be looked at: envelopes first, then combinations, then cases."""
     limit_states = [
-        name
-        for name in ("strength", "serviceability")
-        if any(name in result.envelopes for result in outcome.lines)
+        name for name in LIMIT_STATES if any(name in result.envelopes for result in outcome.lines)
     ]
     views = [View("envelope", name) for name in limit_states]
     views += [
@@ -103,7 +106,7 @@ def ordinates_of(
         upper.append(high)
     empty = np.zeros((0, stations))
     return Ordinates(
-        title=f"{quantity.capitalize()}, {view.title}",
+        title=f"{say(quantity.capitalize())}, {view.title}",
         quantity=quantity,
         lower=np.concatenate(lower) if lower else empty,
         upper=np.concatenate(upper) if upper else empty,

@@ -16,12 +16,13 @@ from analysis_core.results import LineResult
 from analysis_core.units import DisplayUnits
 
 from .diagrams import View
+from .words import noop, say
 
 ORDERS: tuple[Order, ...] = get_args(Order)
 ORDER_WORDS = {
-    "largest": "largest unbalance first",
-    "together": "all joints together",
-    "alternate": "every second joint in turn",
+    "largest": noop("largest unbalance first"),
+    "together": noop("all joints together"),
+    "alternate": noop("every second joint in turn"),
 }
 _BEGINNING = ("stiffness", "factor", "carry")
 
@@ -52,9 +53,9 @@ def recorded(
 ) -> Recorded | str:
     """Return the recorded distribution of a line, or why there is none, in a sentence."""
     if result.status != "balanced":
-        return "This line is not analysed; its findings say why."
+        return say("This line is not analysed; its findings say why.")
     if view.kind == "envelope":
-        return (
+        return say(
             "An envelope gathers many distributions. Choose a case or a combination to see the "
             "one that belongs to it."
         )
@@ -62,7 +63,7 @@ def recorded(
     if view.kind == "combination":
         line = combine_line(line, [Combination(view.name, "strength", dict(view.factors))])
     if not any(action.case == view.name for action in line.actions):
-        return f"Nothing acts on {line.mark} in {view.name}."
+        return say("Nothing acts on {line} in {case}.", line=line.mark, case=view.name)
     try:
         record = distribute(line, view.name, order=order)
     except AnalysisError as error:

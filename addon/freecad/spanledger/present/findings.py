@@ -8,9 +8,16 @@ from analysis_core.findings import Finding
 from analysis_core.results import Outcome
 from analysis_core.tables import safe
 
+from .words import noop, say
+
 ORDER = {"error": 0, "warning": 1, "note": 2}
 # Told apart by shape, not by colour alone.
-GLYPHS = {"error": "✖", "warning": "▲", "note": "·"}
+GLYPHS = {noop("error"): "✖", noop("warning"): "▲", noop("note"): "·"}
+_COUNTED = {
+    "error": (noop("{count} error"), noop("{count} errors")),
+    "warning": (noop("{count} warning"), noop("{count} warnings")),
+    "note": (noop("{count} note"), noop("{count} notes")),
+}
 
 
 @dataclass(frozen=True, slots=True)
@@ -44,11 +51,11 @@ def matching(rows: list[FindingRow], words: str) -> list[FindingRow]:
 def counts_words(rows: list[FindingRow]) -> str:
     """Return how many there are of each severity."""
     parts = []
-    for severity in ORDER:
+    for severity, (one, many) in _COUNTED.items():
         number = sum(row.severity == severity for row in rows)
         if number:
-            parts.append(f"{number} {severity}{'s' if number > 1 else ''}")
-    return ", ".join(parts) or "no findings"
+            parts.append(say(one if number == 1 else many, count=number))
+    return ", ".join(parts) or say("no findings")
 
 
 def _row(finding: Finding, number_of: dict[str, int], line_of: dict[str, int]) -> FindingRow:

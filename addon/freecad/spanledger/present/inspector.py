@@ -12,32 +12,40 @@ from analysis_core.units import DisplayUnits
 from .decisions import CONDITIONS
 from .diagrams import View
 from .symbols import support_kind
+from .words import noop, say
 
-SPRING = "spring"
+SPRING = noop("spring")
 SUPPORT_CHOICES = (*CONDITIONS, SPRING)
-RELEASE_CHOICES = ("continuous", "hinge", SPRING)
+RELEASE_CHOICES = (noop("continuous"), noop("hinge"), SPRING)
+STATUSES = (noop("balanced"), noop("not analysed"))
 
 
 def line_facts(result: LineResult, outcome: Outcome, units: DisplayUnits) -> list[tuple[str, str]]:
     """Return (name, words) about a line as a whole."""
     line = result.line
     facts = [
-        ("Line", safe(line.mark)),
-        ("Storey", safe(line.storey or "–")),
-        ("State", result.status),
-        ("Length", units.text(sum(m.length for m in line.members if m.role == "span"), "length")),
-        ("Rules", safe(outcome.rules or "–")),
+        (say("Line"), safe(line.mark)),
+        (say("Storey"), safe(line.storey or "–")),
+        (say("State"), say(result.status)),
+        (
+            say("Length"),
+            units.text(sum(m.length for m in line.members if m.role == "span"), "length"),
+        ),
+        (say("Rules"), safe(outcome.rules or "–")),
     ]
     if line.fault:
-        facts.append(("Not analysed", safe(line.fault)))
+        facts.append((say("Not analysed"), safe(line.fault)))
     if result.solution is not None:
-        facts.append(("Method", safe(result.solution.method)))
+        facts.append((say("Method"), safe(result.solution.method)))
     if result.verification is not None:
         check = result.verification
         facts += [
-            ("Joint residual", f"{check.joint_residual:.1e} N·m"),
-            ("Continuity", f"{check.continuity_residual:.1e} rad"),
-            ("Independent check", f"differs by {check.independent_check:.1e}"),
+            (say("Joint residual"), f"{check.joint_residual:.1e} N·m"),
+            (say("Continuity"), f"{check.continuity_residual:.1e} rad"),
+            (
+                say("Independent check"),
+                say("differs by {part}", part=f"{check.independent_check:.1e}"),
+            ),
         ]
     return facts
 
@@ -47,13 +55,13 @@ def joint_facts(
 ) -> list[tuple[str, str]]:
     """Return (name, words) about a joint: what carries it, why, and its reactions."""
     at = result.line.joints[joint]
-    facts = [("Place", f"{units.text(at.x, 'length')} along the line")]
+    facts = [(say("Place"), say("{length} along the line", length=units.text(at.x, "length")))]
     if at.element:
-        facts.append(("Carried by", named(at.element, names)))
+        facts.append((say("Carried by"), named(at.element, names)))
     if at.reason:
-        facts.append(("Reason", safe(at.reason)))
+        facts.append((say("Reason"), safe(at.reason)))
     if at.width:
-        facts.append(("Bearing width", units.text(at.width, "section length")))
+        facts.append((say("Bearing width"), units.text(at.width, "section length")))
     return facts + _reactions(result, joint, view, units)
 
 
@@ -63,18 +71,18 @@ def member_facts(
     """Return (name, words) about a member: its element, section and material."""
     part = result.line.members[member]
     facts = [
-        ("Element", named(part.element, names)),
-        ("Length", units.text(part.length, "length")),
+        (say("Element"), named(part.element, names)),
+        (say("Length"), units.text(part.length, "length")),
         ("EI", units.text(part.flexural_rigidity, "flexural rigidity")),
     ]
     if part.section is not None:
-        facts.append(("Section", safe(part.section.name)))
-        facts.append(("Inertia", units.text(part.section.inertia, "inertia")))
+        facts.append((say("Section"), safe(part.section.name)))
+        facts.append((say("Inertia"), units.text(part.section.inertia, "inertia")))
         if part.section.source:
-            facts.append(("From", safe(part.section.source)))
+            facts.append((say("From"), safe(part.section.source)))
     if part.material is not None:
-        facts.append(("Material", safe(part.material.name)))
-        facts.append(("Modulus", units.text(part.material.elastic_modulus, "stress")))
+        facts.append((say("Material"), safe(part.material.name)))
+        facts.append((say("Modulus"), units.text(part.material.elastic_modulus, "stress")))
     return facts
 
 
@@ -111,17 +119,20 @@ def _reactions(
         envelope = result.envelopes.get(view.name)
         found = [r for r in envelope.reactions if r.joint == joint] if envelope else []
         return [
-            (f"Reaction {word}", f"{units.text(e.value, 'force')} ({safe(e.source)})")
+            (word, f"{units.text(e.value, 'force')} ({safe(e.source)})")
             for r in found
-            for word, e in (("largest", r.vertical_max), ("smallest", r.vertical_min))
+            for word, e in (
+                (say("Largest reaction"), r.vertical_max),
+                (say("Smallest reaction"), r.vertical_min),
+            )
         ]
     solution = result.solution if view.kind == "case" else result.combined
     if solution is None or view.name not in solution.cases:
         return []
     across, up, moment = solution.reactions[solution.cases.index(view.name), joint]
-    rows = [("Reaction up", units.text(float(up), "force"))]
+    rows = [(say("Reaction up"), units.text(float(up), "force"))]
     if abs(across) > 0.0:
-        rows.append(("Reaction to the right", units.text(float(across), "force")))
+        rows.append((say("Reaction to the right"), units.text(float(across), "force")))
     if abs(moment) > 0.0:
-        rows.append(("Reaction moment", units.text(float(moment), "moment")))
+        rows.append((say("Reaction moment"), units.text(float(moment), "moment")))
     return rows

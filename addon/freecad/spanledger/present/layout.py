@@ -21,11 +21,12 @@ from .strip import (
     member_words,
 )
 from .symbols import support_symbol
+from .words import noop, say
 
 Floats = NDArray[np.float64]
 LEFT, RIGHT, TOP = 86.0, 40.0, 8.0
 SYMBOL = 13.0
-TITLES = {"moment": "Moment", "shear": "Shear", "deflection": "Deflection"}
+TITLES = {"moment": noop("Moment"), "shear": noop("Shear"), "deflection": noop("Deflection")}
 # Which way a positive value is drawn: moments on the side in tension, deflections as they go.
 DOWNWARD = {"moment": True, "shear": False, "deflection": True}
 MOST_ACTION_ROWS = 5
@@ -94,7 +95,7 @@ def _elevation(
         bottom = axis - 18.0 - row_height * (len(rows) - 1 - number)
         _actions(drawing, strip, case, actions, bottom, row_height, measure)
     if not rows:
-        words = Words(drawing.to_pixel(0.0), axis - 28.0, "no action here", "faint", "left")
+        words = Words(drawing.to_pixel(0.0), axis - 28.0, say("no action here"), "faint", "left")
         drawing.words.append(words)
     _members(drawing, strip, axis, units, measure, chosen)
     _joints(drawing, strip, axis, units, chosen)
@@ -119,7 +120,7 @@ def _members(
         drawing.fills.append(Fill(box, role, 0.30))
         drawing.strokes.append(Stroke((*box, box[0]), role, 2.4 if role == "chosen" else 1.4))
         _ends(drawing, strip, stretch.member.id, left, right, axis)
-        words = member.section.name if member.section else "EI stated"
+        words = member.section.name if member.section else say("EI stated")
         if measure(words) < right - left - 2.0 * SYMBOL:
             middle = (left + right) / 2.0
             drawing.words.append(Words(middle, axis + half + 10.0, words, "faint", small=True))
@@ -191,7 +192,7 @@ def _action_rows(actions: Sequence[ShownAction]) -> list[tuple[str, list[ShownAc
     if len(rows) <= MOST_ACTION_ROWS:
         return rows
     kept = rows[: MOST_ACTION_ROWS - 1]
-    return [*kept, (f"{len(rows) - len(kept)} more", [])]
+    return [*kept, (say("{count} more", count=len(rows) - len(kept)), [])]
 
 
 def _overlap(one: ShownAction, other: ShownAction) -> bool:
@@ -298,7 +299,9 @@ def _band(
                  (0.0, top + height - 3.0)), "band", 1.0)
     )  # fmt: skip
     unit = units.symbol(UNIT_OF[curve.quantity])
-    drawing.words.append(Words(10.0, top + 12.0, TITLES[curve.quantity], "ink", "left", bold=True))
+    drawing.words.append(
+        Words(10.0, top + 12.0, say(TITLES[curve.quantity]), "ink", "left", bold=True)
+    )
     drawing.words.append(Words(10.0, top + 28.0, unit, "faint", "left", small=True))
     base, scale = _scale(curve, top + 14.0, height - 31.0)
     for stretch in strip.stretches:

@@ -9,18 +9,28 @@ from typing import Literal
 from analysis_core.results import LineResult, Outcome
 from analysis_core.units import DisplayUnits
 
+from .words import noop, say
+
 State = Literal["needs a decision", "ready", "balanced", "stale", "posted"]
 STATES: tuple[State, ...] = ("needs a decision", "ready", "balanced", "stale", "posted")
 # A mark of its own shape for each state, so that none is told by colour alone.
 GLYPHS: dict[str, str] = {
-    "needs a decision": "?",
-    "ready": "○",
-    "balanced": "●",
-    "stale": "◐",
-    "posted": "■",
+    noop("needs a decision"): "?",
+    noop("ready"): "○",
+    noop("balanced"): "●",
+    noop("stale"): "◐",
+    noop("posted"): "■",
 }
-NO_STOREY = "No storey"
-COLUMNS = ("Line", "State", "Spans", "Sagging", "Hogging", "Shear", "Deflection")
+NO_STOREY = noop("No storey")
+COLUMNS = (
+    noop("Line"),
+    noop("State"),
+    noop("Spans"),
+    noop("Sagging"),
+    noop("Hogging"),
+    noop("Shear"),
+    noop("Deflection"),
+)
 QUANTITY_OF = ("", "", "", "moment", "moment", "force", "deflection")
 
 
@@ -98,8 +108,8 @@ def _row(index: int, result: LineResult, units: DisplayUnits, state: State) -> R
         "–" if value is None else units.number(value, quantity)
         for value, quantity in zip(values, QUANTITY_OF[3:], strict=True)
     )
-    storey = line.storey or NO_STOREY
-    search = " ".join([line.mark, storey, state, *line.elements]).lower()
+    storey = line.storey or say(NO_STOREY)
+    search = " ".join([line.mark, storey, state, say(state), *line.elements]).lower()
     texts = (line.mark, f"{GLYPHS[state]} {state}", str(spans), *shown)
     return Row(index, line.mark, storey, state, spans, values, texts, search)
 

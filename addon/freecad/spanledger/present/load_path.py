@@ -10,6 +10,8 @@ from analysis_core.results import Outcome
 from analysis_core.tables import safe
 from analysis_core.units import DisplayUnits
 
+from .words import say
+
 
 @dataclass(frozen=True, slots=True)
 class Path:
@@ -36,7 +38,7 @@ def paths_at_joint(outcome: Outcome, line: int, joint: int) -> list[Path]:
     """Return the lines that carry a joint of a line."""
     mark = outcome.lines[line].line.mark
     return [
-        Path(f"↓ on {safe(t.to_line)}", number)
+        Path(say("↓ on {line}", line=safe(t.to_line)), number)
         for t in outcome.model.transfers
         if (t.from_line, t.joint) == (mark, joint)
         and (number := _number(outcome, t.to_line)) is not None
@@ -52,7 +54,10 @@ def paths_on_member(outcome: Outcome, line: int, member: int, units: DisplayUnit
         if (t.to_line, t.member) == (mark, member)
     )
     return [
-        Path(f"↑ {safe(name)} at {units.text(position, 'length')}", number)
+        Path(
+            say("↑ {line} at {place}", line=safe(name), place=units.text(position, "length")),
+            number,
+        )
         for position, name in found
         if (number := _number(outcome, name)) is not None
     ]

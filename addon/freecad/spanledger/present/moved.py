@@ -6,8 +6,9 @@ from analysis_core.results import LineResult, Outcome
 from analysis_core.units import DisplayUnits
 
 from .listing import governing
+from .words import noop, say
 
-_NAMES = ("sagging", "hogging", "shear", "deflection")
+_NAMES = (noop("sagging"), noop("hogging"), noop("shear"), noop("deflection"))
 _QUANTITIES = ("moment", "moment", "force", "deflection")
 _NOTHING = 1e-9  # of the larger value
 
@@ -24,12 +25,12 @@ def moved_words(before: Outcome, after: Outcome, mark: str, units: DisplayUnits)
     """Return what changed for the line in hand, and how many others did."""
     moved = moved_lines(before, after)
     if not moved:
-        return "No governing effect changed."
+        return say("No governing effect changed.")
     parts = []
     old, new = _named(before, mark), _named(after, mark)
     if old is not None and new is not None and mark in moved:
         changes = [
-            f"{name} {_words(a, quantity, units)} → {_words(b, quantity, units)} "
+            f"{say(name)} {_words(a, quantity, units)} → {_words(b, quantity, units)} "
             f"{units.symbol(quantity)}"
             for name, quantity, a, b in zip(
                 _NAMES, _QUANTITIES, governing(old), governing(new), strict=True
@@ -40,7 +41,12 @@ def moved_words(before: Outcome, after: Outcome, mark: str, units: DisplayUnits)
     others = [m for m in moved if m != mark]
     if others:
         listed = ", ".join(others[:4]) + (" …" if len(others) > 4 else "")
-        parts.append(f"{len(others)} other line{'s' * (len(others) > 1)} changed: {listed}.")
+        if len(others) == 1:
+            parts.append(say("1 other line changed: {lines}.", lines=listed))
+        else:
+            parts.append(
+                say("{count} other lines changed: {lines}.", count=len(others), lines=listed)
+            )
     return " ".join(parts)
 
 

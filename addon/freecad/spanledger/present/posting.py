@@ -12,6 +12,8 @@ from analysis_core.results import Outcome
 from analysis_core.tables import safe
 from analysis_core.units import DisplayUnits
 
+from .words import say
+
 MOST_ELEMENTS = 1000
 
 
@@ -38,12 +40,15 @@ class PostPreview:
     @property
     def summary(self) -> str:
         """Return how much will be written, in a sentence."""
-        words = (
-            f"{self.lines} lines: property sets on {self.elements} members and "
-            f"{self.supports} supporting elements."
+        words = say(
+            "{lines} lines: property sets on {members} members and {supports} supporting elements.",
+            lines=self.lines,
+            members=self.elements,
+            supports=self.supports,
         )
         if self.left_out:
-            words += f" Not analysed, so not written: {', '.join(self.left_out)}."
+            left = ", ".join(self.left_out)
+            words += " " + say("Not analysed, so not written: {lines}.", lines=left)
         return words
 
 
@@ -74,13 +79,14 @@ def posted_words(report: PostReport, target: str) -> str:
     parts = [
         f"{count} {word}"
         for count, word in (
-            (report.written, "written"),
-            (report.updated, "brought up to date"),
-            (report.unchanged, "unchanged"),
+            (report.written, say("written")),
+            (report.updated, say("brought up to date")),
+            (report.unchanged, say("unchanged")),
         )
         if count
     ]
-    return f"Posted into '{target}': property sets {', '.join(parts) or 'none'}."
+    sets = ", ".join(parts) or say("none")
+    return say("Posted into '{target}': property sets {sets}.", target=target, sets=sets)
 
 
 def _member_sets(
@@ -96,7 +102,7 @@ def _member_sets(
     ):
         where = units.text(extreme.x, "length")
         source = f" ({safe(extreme.source)})" if extreme.source else ""
-        values.append((name, f"{units.text(extreme.value, quantity)} at {where}{source}"))
+        values.append((name, f"{units.text(extreme.value, quantity)} @ {where}{source}"))
     for name, bounds in (
         ("StartMoment", effects.start_moment),
         ("EndMoment", effects.end_moment),
@@ -105,7 +111,8 @@ def _member_sets(
     sets = [PostedSet(element, "Spanledger_Effects", tuple(values))]
     if effects.curves:
         curves = tuple(
-            (name, f"{len(curve.positions)} positions") for name, curve in effects.curves.items()
+            (name, say("{count} positions", count=len(curve.positions)))
+            for name, curve in effects.curves.items()
         )
         sets.append(PostedSet(element, "Spanledger_Diagrams", curves))
     record = (

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from analysis_core.results import LineResult, Outcome
 
 from .listing import STATES, Row, governing
+from .words import noop
 
 PLAIN, BY_STATE, BY_CHANGE = "plain", "state", "change"
 WAYS = (PLAIN, BY_STATE, BY_CHANGE)
@@ -27,17 +28,17 @@ class Shade:
 
 
 _BY_STATE = {
-    "needs a decision": Shade("needs a decision", "bad", DOTS, 3.5),
-    "ready": Shade("ready", "faint", SHORT),
-    "balanced": Shade("balanced", "line"),
-    "stale": Shade("stale", "attention", LONG, 3.0),
-    "posted": Shade("posted", "good", SOLID, 3.5),
+    "needs a decision": Shade(noop("needs a decision"), "bad", DOTS, 3.5),
+    "ready": Shade(noop("ready"), "faint", SHORT),
+    "balanced": Shade(noop("balanced"), "line"),
+    "stale": Shade(noop("stale"), "attention", LONG, 3.0),
+    "posted": Shade(noop("posted"), "good", SOLID, 3.5),
 }
 _BY_CHANGE = (
-    Shade("unchanged", "line"),
-    Shade("up to 5 %", "deflection", LONG, 3.0),
-    Shade("up to 20 %", "attention", SHORT, 3.5),
-    Shade("more than 20 %, or new", "bad", DOTS, 4.0),
+    Shade(noop("unchanged"), "line"),
+    Shade(noop("up to 5 %"), "deflection", LONG, 3.0),
+    Shade(noop("up to 20 %"), "attention", SHORT, 3.5),
+    Shade(noop("more than 20 %, or new"), "bad", DOTS, 4.0),
 )
 
 

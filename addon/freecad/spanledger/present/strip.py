@@ -28,7 +28,7 @@ from analysis_core.results import Extreme, LineEnvelope, LineResult
 from analysis_core.units import DisplayUnits
 
 from .diagrams import Quantity, View, line_ordinates, view_envelopes
-from .symbols import support_words
+from .words import say
 
 Floats = NDArray[np.float64]
 QUANTITIES: tuple[Quantity, ...] = ("moment", "shear", "deflection")
@@ -166,13 +166,14 @@ def joint_words(joint: Joint, units: DisplayUnits) -> str:
     """Return what holds a joint and why, for a tooltip."""
     from analysis_core.tables import safe, support_text
 
-    parts = [f"Joint {joint.id}: {support_text(joint.support, units)}"]
+    held = support_text(joint.support, units)
+    parts = [say("Joint {number}: {held}", number=joint.id, held=say(held))]
     if joint.reason:
         parts.append(safe(joint.reason))
     if joint.width:
-        parts.append(f"bearing {units.text(joint.width, 'section length')} wide")
+        parts.append(say("bearing {width} wide", width=units.text(joint.width, "section length")))
     if joint.element:
-        parts.append(f"element {safe(joint.element)}")
+        parts.append(say("element {element}", element=safe(joint.element)))
     return "\n".join(parts)
 
 
@@ -180,14 +181,17 @@ def member_words(member: Member, units: DisplayUnits) -> str:
     """Return a member in words, for a tooltip."""
     from analysis_core.tables import safe
 
-    parts = [f"Span {member.span}" if member.role == "span" else "Leg"]
-    parts[0] += f": {units.text(member.length, 'length')}"
+    length = units.text(member.length, "length")
+    if member.role == "span":
+        parts = [say("Span {number}: {length}", number=member.span, length=length)]
+    else:
+        parts = [say("Leg: {length}", length=length)]
     if member.section:
-        parts.append(f"section {safe(member.section.name)}")
+        parts.append(say("section {name}", name=safe(member.section.name)))
     if member.material:
-        parts.append(f"material {safe(member.material.name)}")
+        parts.append(say("material {name}", name=safe(member.material.name)))
     parts.append(f"EI {units.text(member.flexural_rigidity, 'flexural rigidity')}")
-    parts.append(f"element {safe(member.element)}")
+    parts.append(say("element {element}", element=safe(member.element)))
     return "\n".join(parts)
 
 
@@ -217,7 +221,7 @@ def _inside(strip: Strip, x: float) -> bool:
 def _title(line: Line, view: View) -> str:
     spans = len({m.span for m in line.members if m.role == "span"})
     where = f", {line.storey}" if line.storey else ""
-    words = "1 span" if spans == 1 else f"{spans} spans"
+    words = say("1 span") if spans == 1 else say("{count} spans", count=spans)
     return f"{line.mark}{where}: {words}; {view.title}"
 
 
@@ -251,7 +255,7 @@ def _shown(
         high = _polynomial(action.transverse, action.end - action.start)
         words = units.text(low, "line load")
         if units.number(low, "line load") != units.number(high, "line load"):
-            words = f"{units.number(low, 'line load')} to {units.text(high, 'line load')}"
+            words = f"{units.number(low, 'line load')} … {units.text(high, 'line load')}"
         return shown(
             "spread", words, stretch.to_axis(action.start), stretch.to_axis(action.end), low, high
         )
@@ -262,7 +266,7 @@ def _shown(
         at = stretch.to_axis(action.position)
         return shown("couple", units.text(action.moment, "moment"), at, at, action.moment)
     assert isinstance(action, ImposedCurvature)
-    words = f"curvature {action.curvature * 1e3:.3g} mrad/m"
+    words = say("curvature {value} mrad/m", value=f"{action.curvature * 1e3:.3g}")
     return shown(
         "curvature", words, stretch.to_axis(action.start), stretch.to_axis(action.end),
         action.curvature, action.curvature,
@@ -275,17 +279,17 @@ def _joint_action_words(action: JointForce | JointMovement, units: DisplayUnits)
         if action.vertical:
             parts.append(units.text(action.vertical, "force"))
         if action.horizontal:
-            parts.append(f"{units.text(action.horizontal, 'force')} right")
+            parts.append(say("{force} to the right", force=units.text(action.horizontal, "force")))
         if action.moment:
             parts.append(units.text(action.moment, "moment"))
         return "joint", ", ".join(parts) or "0"
     parts = []
     if action.vertical:
-        parts.append(f"moves down {units.text(action.vertical, 'deflection')}")
+        parts.append(say("moves down {by}", by=units.text(action.vertical, "deflection")))
     if action.horizontal:
-        parts.append(f"moves right {units.text(action.horizontal, 'deflection')}")
+        parts.append(say("moves right {by}", by=units.text(action.horizontal, "deflection")))
     if action.rotation:
-        parts.append(f"turns {units.text(action.rotation, 'rotation')}")
+        parts.append(say("turns {by}", by=units.text(action.rotation, "rotation")))
     return "movement", ", ".join(parts) or "0"
 
 
@@ -369,5 +373,5 @@ def _with_before(curve: Curve, before: LineEnvelope | None, line: Line | None) -
 
 __all__ = [
     "Curve", "Peak", "ShownAction", "Stretch", "Strip", "joint_places", "joint_words",
-    "member_words", "stretches_of", "strip_of", "support_words", "values_at",
+    "member_words", "stretches_of", "strip_of", "values_at",
 ]  # fmt: skip

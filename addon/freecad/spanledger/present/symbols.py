@@ -68,13 +68,3 @@ def support_symbol(support: Support | None) -> tuple[Polyline, ...]:
     elif support.rotation == RIGID:
         parts += list(_RAILS)
     return tuple(parts)
-
-
-def support_words(support: Support | None) -> str:
-    """Return how a joint is held, in a few words of the trade."""
-    kind = support_kind(support)
-    if support is None or kind == "none":
-        return "free"
-    if kind != "spring":
-        return kind
-    return "on a spring"
