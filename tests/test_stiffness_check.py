@@ -77,9 +77,9 @@ def test_end_rotations_under_a_force_on_a_taper_follow_from_the_closed_form():
     # Simple beam, EI = D(1 + u), force at midspan: M = Pu L/2 up to there, then P(1-u) L/2.
     length, rigidity, force = 4.0, 8e6, 20e3
 
-    start, _ = loaded_rotations(
-        (Piece(length, (rigidity, rigidity)),), PointForce("q", 0, 2.0, force)
-    )
+    taper = (Piece(length, (rigidity, rigidity)),)
+
+    ((start, _),) = loaded_rotations(taper, [PointForce("q", 0, 2.0, force)])
 
     # With t = 1 + u the integrals of (1-u) M/EI are those of -t + 3 - 2/t and t - 4 + 4/t.
     first = 7 / 8 - 2.0 * math.log(1.5)

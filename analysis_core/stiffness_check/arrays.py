@@ -155,7 +155,8 @@ class _Loads:
         self.moved = np.zeros_like(self.forces)
         self._rows = Rows(len(members) * self._cases)
         self._turned = np.zeros((len(members) * self._cases, 2))
-        self._members, self._varying = members, varying.tolist()
+        self._varying = varying.tolist()
+        self._on_varying: dict[int, list[tuple[int, MemberAction]]] = {}
         columns: dict[tuple[str, ...], dict[str, int]] = {}
         for place, (line, names) in enumerate(zip(lines, cases, strict=True)):
             key = tuple(names)
@@ -163,6 +164,9 @@ class _Loads:
             if column is None:
                 column = columns[key] = {name: i for i, name in enumerate(key)}
             self._take(line, column, place * len(line.members), place * joints)
+        for index, acting in self._on_varying.items():
+            turned = loaded_rotations(members[index].pieces, [action for _, action in acting])
+            np.add.at(self._turned, [slot for slot, _ in acting], turned)
 
     def _take(
         self, line: Line, column: dict[str, int], first_member: int, first_joint: int
@@ -185,7 +189,7 @@ class _Loads:
         slot = index * self._cases + case
         self._rows.add(slot, index, action)
         if self._varying[index]:
-            self._turned[slot] += loaded_rotations(self._members[index].pieces, action)
+            self._on_varying.setdefault(index, []).append((slot, action))
 
     def on_members(
         self, length: Floats, bending: Floats, shear: Floats

@@ -49,23 +49,22 @@ def flexibility(pieces: tuple[Piece, ...]) -> tuple[float, float, float]:
     )
 
 
-def loaded_rotations(pieces: tuple[Piece, ...], action: MemberAction) -> tuple[float, float]:
-    """Return the rotations of both ends of the simple beam under ``action``, rad clockwise."""
+def loaded_rotations(pieces: tuple[Piece, ...], actions: Sequence[MemberAction]) -> Floats:
+    """Return the rotations of both ends of the simple beam under each action: (A, 2), rad."""
     length = sum(piece.length for piece in pieces)
-    x, weight, bending, shear = _points(pieces, _breaks(action))
-    near, far = 1.0 - x / length, -x / length
-    if isinstance(action, ImposedCurvature):
-        inside = (x > action.start) & (x < action.end)
-        curvature = np.where(inside, action.curvature, 0.0)
-        slide = np.zeros_like(x)
-    else:
-        moment, force = simple_beam(action, length, x)
-        curvature, slide = moment * bending, force * shear
-    common = -float((weight * slide).sum()) / length
-    return (
-        float((weight * curvature * near).sum()) + common,
-        float((weight * curvature * far).sum()) + common,
-    )
+    breaks = sorted({b for action in actions for b in _breaks(action)})
+    x, weight, bending, shear = _points(pieces, tuple(breaks))
+    curvatures, slides = np.zeros((len(actions), len(x))), np.zeros((len(actions), len(x)))
+    for row, action in enumerate(actions):
+        if isinstance(action, ImposedCurvature):
+            inside = (x > action.start) & (x < action.end)
+            curvatures[row, inside] = action.curvature
+        else:
+            moment, force = simple_beam(action, length, x)
+            curvatures[row], slides[row] = moment * bending, force * shear
+    near, far = weight * (1.0 - x / length), -weight * x / length
+    slid = (slides * weight).sum(1) / length
+    return np.stack([(curvatures * near).sum(1) - slid, (curvatures * far).sum(1) - slid], axis=1)
 
 
 def simple_beam(action: MemberAction, length: float, x: Floats) -> tuple[Floats, Floats]:
