@@ -346,3 +346,60 @@ def test_lines_together_give_the_same_bits_as_each_alone():
                         np.testing.assert_array_equal(one, other)
                     else:
                         assert one == other
+
+
+def pinned_with(*actions):
+    line = beam_line([1.0], [1.0], [PIN] * 2, actions)
+    cases = list(dict.fromkeys(a.case for a in actions))
+    return whole_cases(line, cases), solve(line, cases)
+
+
+@pytest.mark.parametrize("sign", [1.0, -1.0])
+@pytest.mark.parametrize("absent", [{}, {"X": 0.0, "Y": 0.0}])
+def test_a_peak_between_two_stations_is_not_lost_to_one_on_a_station(sign, absent):
+    # Deflections over L = EI = 1.  X: uniform load, peak 5 q/384 at 0.5, on a station.  Y: couple
+    # at the right end, m t (1 - t^2)/6 with its peak m/(9 sqrt 3) at 1/sqrt 3, between stations
+    # at 0.55 and 0.6, where it is lower than X.  (Standard cases of a simple beam.)
+    m = -6.0 * sign
+    peak = 6.0 / (9.0 * np.sqrt(3.0))  # 0.38490; 0.38400 at 0.6
+    q = sign * 0.3845 * 384.0 / 5.0
+    whole, solution = pinned_with(
+        DistributedForce("X", 0, 0.0, 1.0, (q,)), JointForce("Y", 1, moment=m)
+    )
+    two = [
+        Combination("U1", "strength", {"X": 1.0}, favourable=absent),
+        Combination("U2", "strength", {"Y": 1.0}, favourable=absent),
+    ]
+
+    (found,) = envelope(whole, solution, two, limit_state="strength").members
+
+    extreme = found.deflection_down if sign > 0 else found.deflection_up
+    assert extreme.value == pytest.approx(sign * peak, rel=1e-12)
+    assert extreme.x == pytest.approx(1.0 / np.sqrt(3.0), abs=1e-9)
+    assert extreme.source == "U2"
+
+
+@pytest.mark.parametrize("sign", [1.0, -1.0])
+@pytest.mark.parametrize(
+    ("slope", "zero", "value", "x", "source"),
+    [
+        # G: 4 t (1 - t); Q: slope (t - zero), adverse to the right of zero alone.  With Q the sum
+        # peaks at 0.5 + slope/8 with 1 + slope^2/16 - slope (zero - 0.5); without it at 0.5.
+        (0.2, 0.51, 1.0005, 0.525, "U1"),
+        (0.258, 0.52, 1.0, 0.5, "U1 (without Q)"),
+    ],
+)
+def test_a_peak_beside_the_place_where_a_part_becomes_adverse(sign, slope, zero, value, x, source):
+    whole, solution = pinned_with(
+        DistributedForce("G", 0, 0.0, 1.0, (sign * 8.0,)),
+        JointForce("Q", 0, moment=-sign * slope * zero),
+        JointForce("Q", 1, moment=-sign * slope * (1.0 - zero)),
+    )
+    both = [Combination("U1", "strength", {"G": 1.0, "Q": 1.0}, favourable={"Q": 0.0})]
+
+    (found,) = envelope(whole, solution, both, limit_state="strength").members
+
+    extreme = found.sagging if sign > 0 else found.hogging
+    assert extreme.value == pytest.approx(sign * value, rel=1e-12)
+    assert extreme.x == pytest.approx(x, abs=1e-9)
+    assert extreme.source == source
