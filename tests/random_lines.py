@@ -256,37 +256,39 @@ def frame(seed: int) -> Line:
 
 
 def plain_line(seed: int, case: str = "q") -> Line:
-    """Return a random level beam line on rigid supports, perhaps with overhangs."""
+    """Return a random straight beam line on vertically rigid supports.
+
+    With overhangs, spans of several members, slopes and forces along the line here and there.
+    """
     rng = random.Random(seed)
-    count = rng.randint(1, 6)
-    tails = (rng.random() < 0.35, rng.random() < 0.35)
-    joints, members, x = [], [], 0.0
+    count = rng.randint(1, 7)
+    across, up = rng.choice(((1, 0), (1, 0), (1, 0), (4, 3), (12, -5)))
+    many_bare = rng.choice((0.0, 0.0, 0.4))
+    bare = [rng.random() < (0.3 if i in (0, count) else many_bare) for i in range(count + 1)]
+    if all(bare):
+        bare[count // 2] = False
+    hold = rng.choice([i for i in range(count + 1) if not bare[i]])
+    joints, members, step = [], [], 0
     for index in range(count + 1):
-        bare = (index == 0 and tails[0]) or (index == count and tails[1])
         rotation = rng.choice((FREE, FREE, FREE, RIGID, 10.0 ** rng.uniform(5.0, 8.0)))
-        support = None if bare else Support(RIGID, FREE, rotation)
-        joints.append(Joint(index, x, 0.0, support=support))
-        x += rng.uniform(0.8, 9.0)
+        horizontal = RIGID if index == hold and rng.random() < 0.5 else FREE
+        support = None if bare[index] else Support(RIGID, horizontal, rotation)
+        joints.append(Joint(index, across * step / 64.0, up * step / 64.0, support=support))
+        step += max(1, round(64.0 * rng.uniform(0.8, 9.0) / math.hypot(across, up)))
     for index in range(count):
-        length = joints[index + 1].x - joints[index].x
+        a, b = joints[index], joints[index + 1]
+        length = math.hypot(b.x - a.x, b.z - a.z)
+        loose = 0.0 if bare[index] or bare[index + 1] else 0.15
         members.append(
             Member(
                 index,
                 index,
                 index + 1,
                 pieces(rng, length, plain=rng.random() < 0.5),
-                start_spring=spring(rng, 0.15),
-                end_spring=spring(rng, 0.15),
+                start_spring=spring(rng, loose),
+                end_spring=spring(rng, loose),
                 span=index + 1,
             )
         )
     line = Line(f"plain {seed}", tuple(joints), tuple(members))
-    actions = [
-        replace(action, horizontal=0.0)
-        if isinstance(action, JointForce)
-        else replace(action, axial=() if isinstance(action, DistributedForce) else 0.0)
-        if isinstance(action, DistributedForce | PointForce)
-        else action
-        for action in _actions(rng, line)
-    ]
-    return replace(line, actions=tuple(replace(action, case=case) for action in actions))
+    return replace(line, actions=tuple(replace(a, case=case) for a in _actions(rng, line)))

@@ -191,7 +191,7 @@ def _can_take(line: Line, joint: int, direction: str) -> bool:
 
 @pytest.mark.parametrize("seed", range(6))
 def test_a_mirrored_line_gives_the_mirrored_moments(seed: int) -> None:
-    line = stable(plain_line, 7300 + 50 * seed, 1)[0]
+    line = _level(stable(plain_line, 7300 + 50 * seed, 1)[0])
     count, reach = len(line.members), line.joints[-1].x
     joints = tuple(replace(j, id=i, x=reach - j.x) for i, j in enumerate(reversed(line.joints)))
     members = tuple(
@@ -221,6 +221,23 @@ def test_a_mirrored_line_gives_the_mirrored_moments(seed: int) -> None:
         sizes["displacements"],
         "displacements",
     )
+
+
+def _level(line: Line) -> Line:
+    """The same line laid level, nothing acting along it."""
+    x, joints = 0.0, []
+    for joint, member in zip(line.joints, (None, *line.members), strict=True):
+        x += member.length if member else 0.0
+        joints.append(replace(joint, x=x, z=0.0))
+    actions = [
+        replace(a, axial=() if isinstance(a, DistributedForce) else 0.0)
+        if isinstance(a, DistributedForce | PointForce)
+        else replace(a, horizontal=0.0)
+        if isinstance(a, JointForce)
+        else a
+        for a in line.actions
+    ]
+    return replace(line, joints=tuple(joints), actions=tuple(actions))
 
 
 def _turned_round(piece: Piece) -> Piece:

@@ -65,7 +65,7 @@ def _undisturbed() -> Iterator[None]:
 def _solve_lines(lines: Sequence[Line], cases: Sequence[str]) -> list[LineSolution | AnalysisError]:
     solved: list[LineSolution | AnalysisError | None] = [None] * len(lines)
     column = {name: index for index, name in enumerate(cases)}
-    alike: dict[int, list[tuple[int, PlainLine]]] = {}
+    alike: dict[tuple[bool, ...], list[tuple[int, PlainLine]]] = {}
     for index, line in enumerate(lines):
         plain = None
         try:
@@ -75,7 +75,7 @@ def _solve_lines(lines: Sequence[Line], cases: Sequence[str]) -> list[LineSoluti
         except AnalysisError as error:
             solved[index] = error
         if plain is not None:
-            alike.setdefault(len(plain.lengths), []).append((index, plain))
+            alike.setdefault(plain.bare, []).append((index, plain))
     for group in alike.values():
         for low in range(0, len(group), CHUNK):
             part = group[low : low + CHUNK]
