@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from typing import cast
-
 from analysis_core.checking import check_line
 from analysis_core.distribution.record import distribute
 from analysis_core.effects.states import State, state_line
 from analysis_core.errors import AnalysisError
 from analysis_core.fixed_end_rows import fixed_end_rows
+from analysis_core.line_details import detail_of
 from analysis_core.model import LineModel
 from analysis_core.record_rows import closing_note, record_tables
 from analysis_core.results import LineResult
@@ -25,9 +24,9 @@ _MOST = 4
 
 def distribution_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
     """Return the recorded distributions of the states that govern the moments of a line."""
-    if result.states is None or result.parts is None:
+    if result.detail is None or result.parts is None:
         return []
-    states = [s for s in cast(tuple[State, ...], result.states()) if _governs_moment(s)]
+    states = [s for s in detail_of(result).states if _governs_moment(s)]
     parts: list[Markup] = []
     for state in states[:_MOST]:
         parts += _one(result, state, units)

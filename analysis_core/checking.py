@@ -4,17 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
-from fnmatch import fnmatch
-from typing import cast
 
 from analysis_core.checks import concrete_aci, concrete_en, steel_aisc, steel_en, timber_en
 from analysis_core.checks.design import EffectField, Governing, MemberDesign, Restraints
 from analysis_core.checks.working import Check, Figure, Figures, not_checked
-from analysis_core.effects.states import State, state_stations
+from analysis_core.effects.states import state_stations
 from analysis_core.errors import JobError
+from analysis_core.line_details import detail_of
+from analysis_core.line_selection import chooses
 from analysis_core.model import Line, LineModel, Member
 from analysis_core.results import LineResult, MemberEnvelope, Outcome
-from analysis_core.settings import RestraintSetting, Selector, Settings
+from analysis_core.settings import RestraintSetting, Settings
 
 _COUNT = 41
 
@@ -65,9 +65,9 @@ def check_lines(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberC
 def check_line(result: LineResult, model: LineModel, settings: Settings) -> list[MemberChecks]:
     """Return the checks of the members of one line."""
     envelope = result.envelopes.get("strength")
-    if envelope is None or result.parts is None or result.states is None:
+    if envelope is None or result.parts is None or result.detail is None:
         return []
-    states = cast(tuple[State, ...], result.states())
+    states = detail_of(result).states
     at = state_stations(result.parts, states, _COUNT)
     durations = _durations(model, settings)
     out = []
@@ -144,7 +144,7 @@ def restraints(line: Line, member: Member, model: LineModel, settings: Settings)
     if slab:
         reasons.append(f"top flange all along by slab {slab}")
     for setting in settings.checks.restraints:
-        if not _selects(setting.on, line, member, model):
+        if not chooses(setting.on, line, member, model):
             continue
         places = _places(setting, member)
         if setting.flange in ("top", "both"):
@@ -171,18 +171,6 @@ def _places(setting: RestraintSetting, member: Member) -> set[float]:
         if 0.0 <= s <= member.length:
             out.add(s)
     return out
-
-
-def _selects(on: Selector, line: Line, member: Member, model: LineModel) -> bool:
-    pairs = [
-        (on.name, model.names.get(member.element, "")),
-        (on.storey, line.storey or ""),
-        (on.line, line.mark),
-        (on.material, member.material.name if member.material else ""),
-    ]
-    if on.global_ids and member.element not in on.global_ids:
-        return False
-    return all(not pattern or fnmatch(text.lower(), pattern.lower()) for pattern, text in pairs)
 
 
 def _cantilever(line: Line, member: Member) -> bool:

@@ -42,7 +42,7 @@ def choose(model: LineModel, settings: Settings) -> tuple[Rules, list[Finding]]:
         own = tuple(c for c in own if c.limit_state not in states)
         findings += _filled(stated, own, rule_set.title)
     name = f"{rule_set.title} ({rule_set.edition})"
-    return Rules((*stated, *own), arrangements, name), findings
+    return Rules((*stated, *own), arrangements, name, rule_set), findings
 
 
 def with_combinations(model: LineModel, rules: Rules) -> LineModel:

@@ -5,7 +5,7 @@ Arrays have the case first.  They are marked read-only when they leave the solve
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -150,8 +150,8 @@ class LineResult:
     verification: Verification | None = None
     parts: LineSolution | None = None
     """The solution of what stands on each span by itself; its cases are named "Q @ span 2"."""
-    states: Callable[[], Sequence[object]] | None = None
-    """Gives the states behind the extremes of strength (see ``effects.states``), on request."""
+    detail: Callable[[], object] | None = None
+    """Gives the ``line_details.LineDetail`` of the line, on request."""
     fingerprint: str = ""
     """Of all that the results depend on; see ``fingerprints``."""
     basis: Mapping[str, str] = field(default_factory=dict)

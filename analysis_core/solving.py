@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
-from functools import partial
+from functools import cache
 
 import numpy as np
 
@@ -24,13 +24,14 @@ from analysis_core.effects.arrangements import (
 )
 from analysis_core.effects.combinations import combine
 from analysis_core.effects.envelopes import envelopes
-from analysis_core.effects.states import State, governing_states
 from analysis_core.errors import AnalysisError, MechanismError
 from analysis_core.findings import Finding
 from analysis_core.fingerprints import basis, fingerprint
+from analysis_core.line_details import DetailInput, LineDetail, line_detail
 from analysis_core.load_levels import levels
 from analysis_core.model import Action, Combination, Line, LineModel, PointForce, Transfer
 from analysis_core.results import LineEnvelope, LineResult, LineSolution, Verification
+from analysis_core.rules import RuleSet
 from analysis_core.settings import Settings
 
 Progress = Callable[[str, float], None]
@@ -68,11 +69,12 @@ class Memory:
 
 @dataclass(frozen=True, slots=True)
 class Rules:
-    """What lines are combined by: combinations, arrangements, and the name of the rule set."""
+    """What lines are combined by: combinations, arrangements, and the rule set with its title."""
 
     combinations: tuple[Combination, ...]
     arrangements: Arrangements
     name: str
+    rule_set: RuleSet
 
 
 def solve_lines(
@@ -323,7 +325,18 @@ def _results(
             solution=s.whole,
             combined=combine(s.whole, rules.combinations),
             parts=s.parts,
-            states=partial(_states, s, rules, found.envelopes),
+            detail=_once(
+                DetailInput(
+                    s.spans,
+                    s.parts,
+                    found.envelopes,
+                    rules.combinations,
+                    rules.arrangements,
+                    rules.rule_set,
+                    model,
+                    settings,
+                )
+            ),
             envelopes=found.envelopes,
             verification=Verification(
                 s.whole.joint_residual, s.whole.continuity_residual, found.difference
@@ -335,14 +348,9 @@ def _results(
     return tuple(results[line.mark] for line in model.lines)
 
 
-def _states(
-    solved: _Solved, rules: Rules, by_state: Mapping[str, LineEnvelope]
-) -> tuple[State, ...]:
-    envelope = by_state.get("strength")
-    if envelope is None:
-        return ()
-    strength = [c for c in rules.combinations if c.limit_state == "strength"]
-    return governing_states(solved.spans, solved.parts, strength, rules.arrangements, envelope)
+def _once(given: DetailInput) -> Callable[[], LineDetail]:
+    """The detail of a line, made when it is first asked for."""
+    return cache(lambda: line_detail(given))
 
 
 def _finished(

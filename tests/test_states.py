@@ -9,6 +9,7 @@ from analysis_core import pipeline
 from analysis_core.distribution import solve
 from analysis_core.effects.states import state_line, state_stations
 from analysis_core.job import load
+from analysis_core.line_details import detail_of
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 
@@ -21,7 +22,7 @@ def outcome():
 
 def test_the_states_reach_the_extremes_of_the_envelope(outcome):
     for result in outcome.lines:
-        states = result.states()
+        states = detail_of(result).states
         at = state_stations(result.parts, states, 161)
         for member in result.envelopes["strength"].members:
             moments = at.moment[:, member.member]
@@ -32,7 +33,7 @@ def test_the_states_reach_the_extremes_of_the_envelope(outcome):
 
 def test_a_state_solved_by_itself_has_the_effects_of_its_superposition(outcome):
     for result in outcome.lines[:3]:
-        for state in result.states():
+        for state in detail_of(result).states:
             line = state_line(result.parts.line, state, case="state")
             moments = solve(line, ["state"]).end_moments[0]
             at = state_stations(result.parts, [state], 21)
@@ -43,7 +44,7 @@ def test_a_state_solved_by_itself_has_the_effects_of_its_superposition(outcome):
 
 def test_a_state_says_what_it_governs(outcome):
     first = outcome.lines[0]
-    (hogging,) = [s for s in first.states() if "hogging of span 1" in s.effects]
+    (hogging,) = [s for s in detail_of(first).states if "hogging of span 1" in s.effects]
 
     assert "Offices on spans 1, 2" in hogging.source
     assert first.envelopes["strength"].members[0].hogging.source == hogging.source
