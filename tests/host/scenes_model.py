@@ -426,15 +426,11 @@ def language():
     opened(desk, copied())
     canvas = widget(QtWidgets.QWidget, "SpanledgerCanvas")
     picture_of_screen("language")
-    menus = [action.text() for action in FreeCADGui.getMainWindow().menuBar().actions()]
+    model = desk.panels.list.model
     bar = widget(QtWidgets.QTabWidget, "SpanledgerTabs")
     return {
         "tabs": [bar.tabText(i) for i in range(bar.count())],
         "title": widget(QtWidgets.QLabel, "SpanledgerTitle").text(),
         "words": [w.text for w in canvas.drawing.words],
-        "states": sorted(
-            {desk.panels.list.model.data(desk.panels.list.model.index_of(0).siblingAtColumn(1))}
-        ),
-        "menus": menus,
-        "command": FreeCADGui.Command.get("Spanledger_Open").getInfo()["menuText"],
+        "states": [model.data(model.index_of(0).siblingAtColumn(1))],
     }

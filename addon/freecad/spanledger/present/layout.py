@@ -52,7 +52,9 @@ def lay_out(
     that is being worked on.
     """
     length = max(s.end for s in strip.stretches)
-    drawing = Drawing(width, height, LEFT, max(width - LEFT - RIGHT, 40.0) / length)
+    titles = max(measure(say(title)) for title in TITLES.values())
+    left = max(LEFT, 1.15 * titles + 44.0)  # titles are bold; labels hang over the first joint
+    drawing = Drawing(width, height, left, max(width - left - RIGHT, 40.0) / length)
     shown = [q for q in quantities if q in strip.curves]
     rows = _action_rows(strip.actions)
     spare = max(height - least_height(strip, quantities), 0.0)
@@ -372,7 +374,7 @@ def _peaks(
         half = measure(peak.words) / 2.0
         below = y >= base
         words_y = min(max(y + (9.0 if below else -9.0), top + 8.0), top + height - 10.0)
-        left = min(max(x, LEFT - 30.0 + half), drawing.width - half - 4.0)
+        left = min(max(x, drawing.origin - 24.0 + half), drawing.width - half - 4.0)
         if any(abs(left - t[0]) < half + t[2] and abs(words_y - t[1]) < 12.0 for t in taken):
             continue
         taken.append((left, words_y, half + 3.0))
