@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.arrangements import Arrangements, Part, SpanCases
-from analysis_core.effects.extremes import Peaks
+from analysis_core.effects.extremes import Peaks, together
 from analysis_core.effects.factors import FactorTable, factor_table
 from analysis_core.effects.fields import fields
 from analysis_core.effects.sampling import both
@@ -141,9 +141,8 @@ def _member_envelopes(
         swept = sweep(block, table, count)
         of_lines = block.line.tolist()
         parts = [batch[i].parts for i in of_lines]
-        moment, shear, deflection = (
-            _named(effect, table, parts) for effect in (swept.moment, swept.shear, swept.deflection)
-        )
+        effects = (swept.moment, swept.shear, swept.deflection)
+        moment, shear, deflection = _named(effects, table, parts)
         places = _settled(np.linspace(0.0, 1.0, count)[:, None] * block.length)
         numbers = zip(of_lines, block.member.tolist(), strict=True)
         for b, (i, m) in enumerate(numbers):
@@ -151,13 +150,23 @@ def _member_envelopes(
     return [tuple(m for m in members if m is not None) for members in out]
 
 
-def _named(swept: Swept, table: FactorTable, parts: Sequence[tuple[Part, ...]]) -> _Named:
-    return _Named(
-        top=_settled(swept.top),
-        bottom=_settled(swept.bottom),
-        highest=named_extremes(swept.highest, table, parts, largest=True),
-        lowest=named_extremes(swept.lowest, table, parts, largest=False),
-    )
+def _named(
+    effects: Sequence[Swept], table: FactorTable, parts: Sequence[tuple[Part, ...]]
+) -> list[_Named]:
+    """Effects of the same members, their extremes named together."""
+    every = [own for _ in effects for own in parts]
+    highest = named_extremes(together([e.highest for e in effects]), table, every, largest=True)
+    lowest = named_extremes(together([e.lowest for e in effects]), table, every, largest=False)
+    size = len(parts)
+    return [
+        _Named(
+            top=_settled(effect.top),
+            bottom=_settled(effect.bottom),
+            highest=highest[i * size : (i + 1) * size],
+            lowest=lowest[i * size : (i + 1) * size],
+        )
+        for i, effect in enumerate(effects)
+    ]
 
 
 def _settled(values: Floats) -> Floats:

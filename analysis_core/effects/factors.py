@@ -74,32 +74,29 @@ class FactorTable:
         full = (np.where(upward, high, low) == stated) & matters
         coded = np.ascontiguousarray(np.packbits(np.concatenate([full, matters]), axis=0).T)
         known: dict[tuple[int, bytes, int], str] = {}
+        choices: dict[int, list[tuple[str, list[int], float]]] = {}
         out = []
         for b, row in enumerate(rows.tolist()):
             key = row, coded[b].tobytes(), id(parts[b])
-            if key not in known:
+            text = known.get(key)
+            if text is None:
+                if row not in choices:
+                    choices[row] = self._choices(row)
                 notes = [self.labels[row]] if self.labels[row] else []
-                notes += self._notes(row, full[:, b], matters[:, b], parts[b])
-                known[key] = f"{self.names[row]} ({'; '.join(notes)})" if notes else plain[row]
-            out.append(known[key])
+                notes += _notes(choices[row], full[:, b], matters[:, b], parts[b])
+                text = f"{self.names[row]} ({'; '.join(notes)})" if notes else plain[row]
+                known[key] = text
+            out.append(text)
         return out
 
-    def _notes(
-        self,
-        row: int,
-        full: NDArray[np.bool_],
-        matters: NDArray[np.bool_],
-        parts: tuple[Part, ...],
-    ) -> list[str]:
-        notes = []
-        for case, group in itertools.groupby(range(len(parts)), lambda c: parts[c].case):
-            own = [c for c in group if self.low[row, c] != self.high[row, c]]
-            on = [c for c in own if full[c]]
-            if any(matters[c] for c in own) and not (len(own) == 1 and on):
-                loaded = [parts[c] for c in on]
-                everywhere = len(on) == len(own)
-                notes.append(_note(case, loaded, everywhere, self._rest(row, own)))
-        return notes
+    def _choices(self, row: int) -> list[tuple[str, list[int], float]]:
+        """The cases of a row that leave a choice: name, parts, share that is kept elsewhere."""
+        free = (self.low[row] != self.high[row]).tolist()
+        by_case: dict[str, list[int]] = {}
+        for c, part in enumerate(self.parts):
+            if free[c]:
+                by_case.setdefault(part.case, []).append(c)
+        return [(case, own, self._rest(row, own)) for case, own in by_case.items()]
 
     def _rest(self, row: int, own: Sequence[int]) -> float:
         """The share of the stated factor that the other parts keep."""
@@ -206,6 +203,20 @@ def _share(part: Part, loaded: frozenset[int] | None, elsewhere: float) -> float
     if loaded is None:
         return 0.0
     return 1.0 if part.span is None or part.span in loaded else elsewhere
+
+
+def _notes(
+    choices: Sequence[tuple[str, list[int], float]],
+    full: NDArray[np.bool_],
+    matters: NDArray[np.bool_],
+    parts: tuple[Part, ...],
+) -> list[str]:
+    notes = []
+    for case, own, rest in choices:
+        on = [c for c in own if full[c]]
+        if any(matters[c] for c in own) and not (len(own) == 1 and on):
+            notes.append(_note(case, [parts[c] for c in on], len(on) == len(own), rest))
+    return notes
 
 
 def _note(case: str, loaded: Sequence[Part], everywhere: bool, rest: float) -> str:
