@@ -6,7 +6,9 @@ understood becomes a finding with its GlobalId; nothing is dropped in silence.
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+import gc
+from collections.abc import Iterable, Iterator, Mapping
+from contextlib import contextmanager
 from typing import Any
 
 from analysis_core.building import Building
@@ -14,13 +16,21 @@ from analysis_core.ifc.analytical_actions import ActionReader
 from analysis_core.ifc.analytical_conditions import ConditionReader
 from analysis_core.ifc.analytical_groups import UNASSIGNED, GroupReader
 from analysis_core.ifc.analytical_members import Local, MemberReader
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed, name_of, titled
+from analysis_core.ifc.analytical_notes import (
+    MALFORMED,
+    Notes,
+    global_id,
+    is_kind,
+    listed,
+    name_of,
+    titled,
+)
 from analysis_core.ifc.analytical_properties import MemberProperties
 from analysis_core.ifc.analytical_targets import Target, chained
 from analysis_core.ifc.analytical_topology import Topology
-from analysis_core.ifc.curves import Measures
 from analysis_core.ifc.frames import Frame
 from analysis_core.ifc.ours import RESULT_TYPE
+from analysis_core.ifc.paths import Measures
 from analysis_core.ifc.source import Source
 from analysis_core.settings import Settings
 
@@ -41,10 +51,21 @@ def read_analytical(source: Source, settings: Settings | None = None) -> Buildin
 
     Never raises for what a model holds: see ``Building.findings``.
     """
-    settings = settings or Settings()
     notes = Notes()
-    reader = _Reader(source, settings, notes)
-    return reader.building()
+    with _without_collections():
+        return _Reader(source, settings or Settings(), notes).building()
+
+
+@contextmanager
+def _without_collections() -> Iterator[None]:
+    """Pause the garbage collector: the many small objects made here all stay."""
+    was_on = gc.isenabled()
+    gc.disable()
+    try:
+        yield
+    finally:
+        if was_on:
+            gc.enable()
 
 
 class _Reader:
@@ -80,6 +101,7 @@ class _Reader:
             nodes,
             self.settings.tolerances,
             self.notes,
+            self.source.schema,
         ).read(actions, self._targets_of_actions(), cases_of)
         self._report_loose(actions, cases_of)
         self._report_models()
@@ -127,8 +149,8 @@ class _Reader:
         parts: dict[int, list[Any]] = {}
         for relation in self.file.by_type("IfcRelAggregates"):
             try:
-                if relation[4].is_a("IfcStructuralCurveMember"):
-                    members = [p for p in relation[5] if p.is_a("IfcStructuralCurveMember")]
+                if is_kind(relation[4], "IfcStructuralCurveMember"):
+                    members = [p for p in relation[5] if is_kind(p, "IfcStructuralCurveMember")]
                     parts.setdefault(relation[4].id(), []).extend(members)
             except MALFORMED as error:
                 self.notes.malformed(relation, error)
@@ -175,7 +197,7 @@ class _Reader:
         below: dict[int, list[int]] = {}
         for relation in self.file.by_type("IfcRelAssignsToGroup"):
             try:
-                items = [i.id() for i in relation[4] or () if i.is_a("IfcGroup")]
+                items = [i.id() for i in relation[4] or () if is_kind(i, "IfcGroup")]
                 below.setdefault(relation[6].id(), []).extend(items)
             except MALFORMED:
                 continue
@@ -227,8 +249,8 @@ class _Reader:
         for relation in relations:
             try:
                 member, connection = relation[4], relation[5]
-                if connection.is_a("IfcStructuralCurveConnection") and member.is_a(
-                    "IfcStructuralCurveMember"
+                if is_kind(connection, "IfcStructuralCurveConnection") and is_kind(
+                    member, "IfcStructuralCurveMember"
                 ):
                     held.setdefault(connection.id(), []).append(member)
             except MALFORMED:
@@ -317,7 +339,7 @@ class _Reader:
 
 
 def _tie(ties: dict[int, str], item: Any, element: Any) -> None:
-    if item.is_a("IfcStructuralItem") and element.is_a("IfcElement"):
+    if is_kind(item, "IfcStructuralItem") and is_kind(element, "IfcElement"):
         ties.setdefault(item.id(), element[0])
 
 

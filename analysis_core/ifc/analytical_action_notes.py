@@ -6,7 +6,13 @@ from collections.abc import Sequence
 from typing import Any
 
 from analysis_core.ifc.analytical_members import Local
-from analysis_core.ifc.analytical_notes import Notes, global_id, listed, titled
+from analysis_core.ifc.analytical_notes import (
+    Notes,
+    global_id,
+    is_kind,
+    listed,
+    titled,
+)
 from analysis_core.ifc.analytical_targets import Target
 from analysis_core.settings import Tolerances
 
@@ -63,7 +69,7 @@ class ActionNotes:
     def off_target(self, action: Any, item: Any) -> None:
         """Note an action on something that is not analysed."""
         reason = next(
-            (text for name, text in _OFF_TARGET if item.is_a(name)), "nothing is known of it"
+            (text for name, text in _OFF_TARGET if is_kind(item, name)), "nothing is known of it"
         )
         self.left_out(action, reason, item, slug="action-without-member")
 
@@ -99,7 +105,7 @@ class ActionNotes:
 
     def warping(self, action: Any, load: Any) -> None:
         """Note a warping moment."""
-        if load.is_a("IfcStructuralLoadSingleForceWarping") and load[7]:
+        if is_kind(load, "IfcStructuralLoadSingleForceWarping") and load[7]:
             self._notes.add(
                 "warning",
                 "warping-moment",

@@ -20,16 +20,26 @@ from analysis_core.ifc.analytical_loads import (
     varying_load,
 )
 from analysis_core.ifc.analytical_members import Local
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, name_of, titled
+from analysis_core.ifc.analytical_notes import (
+    MALFORMED,
+    Notes,
+    global_id,
+    is_kind,
+    name_of,
+    titled,
+)
 from analysis_core.ifc.analytical_targets import Target, across, axes_of, both, cut, times, turned
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.file_units import FileUnits
-from analysis_core.ifc.frames import Frame
+from analysis_core.ifc.frames import Frame, Vector
 from analysis_core.settings import Tolerances
 
 Cases = Sequence[tuple[str, float]]
 
 _ON_AXIS = 1e-3
+_ON_SURFACES = (
+    "IfcStructuralSurfaceAction", "IfcStructuralPlanarAction", "IfcStructuralPlanarActionVarying",
+)  # fmt: skip
 
 
 class ActionReader:
@@ -43,11 +53,14 @@ class ActionReader:
         nodes: Mapping[int, Node],
         tolerances: Tolerances,
         notes: Notes,
+        schema: str,
     ) -> None:
         self._topology = topology
         self._units = units
         self._members = members
         self._nodes = nodes
+        # IFC2X3 has CausedBy in the tenth place, and states the distribution by the class.
+        self._has_distribution = schema != "IFC2X3"
         self._notes = notes
         self._report = ActionNotes(notes, tolerances, units.length)
 
@@ -80,7 +93,9 @@ class ActionReader:
 
     def _on(self, action: Any, item: Any, cases: Cases) -> list[BuildingAction]:
         load = action[7]
-        if action.is_a("IfcStructuralSurfaceAction") or action.is_a("IfcStructuralPlanarAction"):
+        if is_kind(action, "IfcStructuralSurfaceAction") or is_kind(
+            action, "IfcStructuralPlanarAction"
+        ):
             self._report.left_out(
                 action, "it acts on a surface, and surface actions are not spread to members yet",
                 item, slug="surface-action",
@@ -95,7 +110,7 @@ class ActionReader:
         if target is None:
             self._report.off_target(action, item)
             return []
-        if action.is_a("IfcStructuralPointAction"):
+        if is_kind(action, "IfcStructuralPointAction"):
             return self._point_on_member(action, load, target, cases)
         return self._along_member(action, load, target, cases)
 
@@ -104,10 +119,10 @@ class ActionReader:
     def _on_node(self, action: Any, load: Any, node: Node, cases: Cases) -> list[BuildingAction]:
         axes = node.axes if action[8] == "LOCAL_COORDS" else axes_of(node.frame)
         force = moment = displacement = rotation = NIL
-        if load.is_a("IfcStructuralLoadSingleForce"):
+        if is_kind(load, "IfcStructuralLoadSingleForce"):
             force, moment = both(point_force(load, self._units), axes)
             self._report.warping(action, load)
-        elif load.is_a("IfcStructuralLoadSingleDisplacement"):
+        elif is_kind(load, "IfcStructuralLoadSingleDisplacement"):
             displacement, rotation = both(movement(load, self._units), axes)
         else:
             raise LoadError(f"a load of class {load.is_a()} does not act on a point")
@@ -133,7 +148,7 @@ class ActionReader:
     def _point_on_member(
         self, action: Any, load: Any, target: Target, cases: Cases
     ) -> list[BuildingAction]:
-        if not load.is_a("IfcStructuralLoadSingleForce"):
+        if not is_kind(load, "IfcStructuralLoadSingleForce"):
             raise LoadError(
                 f"a load of class {load.is_a()} does not act at a point of a member. Put a "
                 f"displacement on a point connection"
@@ -161,15 +176,15 @@ class ActionReader:
     def _along_member(
         self, action: Any, load: Any, target: Target, cases: Cases
     ) -> list[BuildingAction]:
-        if load.is_a("IfcStructuralLoadTemperature"):
+        if is_kind(load, "IfcStructuralLoadTemperature"):
             return self._temperature(action, load, target, cases)
         begin, end = self._extent(action, target)
-        if action.is_a("IfcStructuralLinearActionVarying"):
+        if is_kind(action, "IfcStructuralLinearActionVarying"):
             loads = [load, *(action[13] or ())]
             samples = varying_load(loads, self._varying_places(action, target), self._units)
             begin, end = 0.0, target.length  # the places are counted on the member
         else:
-            distribution = str(getattr(action, "PredefinedType", None) or "")
+            distribution = str(action[11]) if self._has_distribution else ""
             samples = curve_load(load, distribution, self._units)
         if samples.stations is not None:
             self._report.relative(action, samples.stations, target)
@@ -181,7 +196,7 @@ class ActionReader:
                 f"{titled(action)}: {samples.note}.",
                 (global_id(action),),
             )
-        projected = str(getattr(action, "ProjectedOrTrue", None)) == "PROJECTED_LENGTH"
+        projected = action[10 if self._has_distribution else 11] == "PROJECTED_LENGTH"
         if projected and action[8] == "LOCAL_COORDS":
             self._notes.add(
                 "warning",
@@ -286,7 +301,7 @@ class ActionReader:
         places = []
         for representation in action[12][0] or ():
             item = representation[3][0]
-            if item.is_a("IfcCartesianPoint") and len(item[0]) < 3:
+            if is_kind(item, "IfcCartesianPoint") and len(item[0]) < 3:
                 # Fewer coordinates are counted along the curve itself.
                 places.append(float(item[0][0]) * self._units.length)
                 continue
@@ -314,8 +329,12 @@ def _axis_actions(action: Any, load: Load, part: Local, cases: Cases) -> list[Bu
             part.member.global_id,
             load.shape,
             load.stations or (),
-            tuple(times(f, factor) for f in load.forces),
-            tuple(times(m, factor) for m in load.moments) if has_moments else (),
+            _scaled(load.forces, factor),
+            _scaled(load.moments, factor) if has_moments else (),
         )
         for case, factor in cases
     ]
+
+
+def _scaled(vectors: tuple[Vector, ...], factor: float) -> tuple[Vector, ...]:
+    return vectors if factor == 1.0 else tuple(times(vector, factor) for vector in vectors)

@@ -13,7 +13,15 @@ from typing import Any
 from analysis_core.building import Attachment, Axes, Connection, Restraint
 from analysis_core.ifc import frames
 from analysis_core.ifc.analytical_members import Local
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed, name_of, titled
+from analysis_core.ifc.analytical_notes import (
+    MALFORMED,
+    Notes,
+    global_id,
+    is_kind,
+    listed,
+    name_of,
+    titled,
+)
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.frames import Frame, Vector
@@ -184,13 +192,13 @@ class ConditionReader:
         constraint = relation[10] if len(relation) > 10 else None
         if constraint is None:
             return None, (0.0, 0.0, 0.0)
-        if not constraint.is_a("IfcConnectionPointGeometry"):
+        if not is_kind(constraint, "IfcConnectionPointGeometry"):
             self._report_constraint(relation, constraint)
             return None, (0.0, 0.0, 0.0)
         here = node.connection.point
         stated = self._topology.vertex(constraint[0])
         there = frames.point(local.frame, *stated) if stated is not None else here
-        if constraint.is_a("IfcConnectionPointEccentricity") and constraint[1] is None:
+        if is_kind(constraint, "IfcConnectionPointEccentricity") and constraint[1] is None:
             length = self._units.length
             offsets = [float(v or 0.0) * length for v in constraint[2:5]]
             if any(offsets):
@@ -207,7 +215,7 @@ class ConditionReader:
         self, condition: Any, axes: Axes, owner: Any, *, unknown: float
     ) -> Restraint | None:
         """Return the stiffness of a condition, ``unknown`` where a direction is not stated."""
-        if not condition.is_a("IfcBoundaryNodeCondition"):
+        if not is_kind(condition, "IfcBoundaryNodeCondition"):
             self._notes.add(
                 "warning",
                 "condition-not-understood",
@@ -216,8 +224,9 @@ class ConditionReader:
                 (global_id(owner),),
             )
             return None
-        values = [self._stiffness(condition[i + 1], i, owner, unknown=unknown) for i in range(6)]
-        if condition.is_a("IfcBoundaryNodeConditionWarping") and condition[7] is not None:
+        get = condition.get_argument
+        values = [self._stiffness(get(i + 1), i, owner, unknown=unknown) for i in range(6)]
+        if is_kind(condition, "IfcBoundaryNodeConditionWarping") and condition[7] is not None:
             self._once(
                 "warping-condition",
                 f"{titled(owner)} states a condition on warping, which has no effect here: "
@@ -229,7 +238,8 @@ class ConditionReader:
         return Restraint((values[0], values[1], values[2]), (values[3], values[4], values[5]), axes)
 
     def _stiffness(self, value: Any, index: int, owner: Any, *, unknown: float) -> float:
-        number = getattr(value, "wrappedValue", value)
+        plain = value is None or isinstance(value, float | int)
+        number = value if plain else value.get_argument(0)
         if number is None:
             kind = "free" if unknown == 0.0 else "rigid"
             self._unknown.setdefault(kind, []).append(global_id(owner))

@@ -7,7 +7,14 @@ from collections.abc import Iterator
 from dataclasses import dataclass, field
 from typing import Any
 
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed, titled
+from analysis_core.ifc.analytical_notes import (
+    MALFORMED,
+    Notes,
+    global_id,
+    is_kind,
+    listed,
+    titled,
+)
 
 _DEEPEST_NESTING = 60
 _KINDS = {
@@ -104,7 +111,7 @@ class GroupGraph:
         for relation in file.by_type("IfcRelAssignsToGroup"):
             try:
                 group = relation[6]
-                if group is None or not group.is_a("IfcGroup"):
+                if group is None or not is_kind(group, "IfcGroup"):
                     continue
                 key = group.id()
                 if key not in self.groups:
@@ -129,7 +136,7 @@ class GroupGraph:
             below = self._all_below(key)
             if any(self.groups[k].kind == "case" for k in below if k in self.groups):
                 # Only a load group has a factor; other groups are no combination.
-                if group.entity.is_a("IfcStructuralLoadGroup"):
+                if is_kind(group.entity, "IfcStructuralLoadGroup"):
                     group.kind = "combination"
             elif self._acting.intersection(below):
                 group.kind = "case"

@@ -10,6 +10,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from typing import Any, Literal
 
+from analysis_core.ifc.analytical_notes import is_kind
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.frames import Vector
 
@@ -75,14 +76,17 @@ class Load:
 
 def six(load: Any, units: FileUnits, kinds: Sequence[str]) -> tuple[Vector, Vector]:
     """Return attributes 1 to 6 of a load as two vectors in SI; what is not stated is 0."""
-    values = []
+    values = [0.0] * 6
+    get = load.get_argument
     for index, kind in enumerate(kinds):
-        number = load[index + 1]
-        value = float(number) if number is not None else 0.0
-        if not math.isfinite(value):
-            raise LoadError("one of its values is not finite")
-        values.append(value * units.to_si(kind) if value else 0.0)
-    return (values[0], values[1], values[2]), (values[3], values[4], values[5])
+        number = get(index + 1)
+        if number:  # neither 0 nor not stated
+            value = float(number)
+            if not math.isfinite(value):
+                raise LoadError("one of its values is not finite")
+            values[index] = value * units.to_si(kind)
+    a, b, c, d, e, f = values
+    return (a, b, c), (d, e, f)
 
 
 def point_force(load: Any, units: FileUnits) -> tuple[Vector, Vector]:
@@ -104,9 +108,9 @@ def temperatures(load: Any, units: FileUnits) -> tuple[float, float, float]:
 
 def curve_load(load: Any, distribution: str, units: FileUnits) -> Load:
     """Return the load of a curve action.  Raises LoadError where it is not understood."""
-    if load.is_a("IfcStructuralLoadConfiguration"):
+    if is_kind(load, "IfcStructuralLoadConfiguration"):
         return _configuration(load, distribution, units)
-    if load.is_a("IfcStructuralLoadLinearForce"):
+    if is_kind(load, "IfcStructuralLoadLinearForce"):
         force, moment = six(load, units, _LINEAR_KINDS)
         if distribution in _WAVES:
             return _wave(force, moment, distribution)
@@ -114,7 +118,7 @@ def curve_load(load: Any, distribution: str, units: FileUnits) -> Load:
         if distribution not in ("CONST", "NOTDEFINED", "", "None"):
             note = f"it states one value for a distribution {distribution}; taken as constant"
         return Load("continuous", (force,), (moment,), None, note)
-    if load.is_a("IfcStructuralLoadSingleForce"):
+    if is_kind(load, "IfcStructuralLoadSingleForce"):
         raise LoadError(
             "it is a single force without a place on the member. Give it a vertex "
             "(IfcStructuralPointAction) or a location (IfcStructuralLoadConfiguration)"
@@ -166,7 +170,7 @@ def _spacing_note(count: int, distribution: str) -> str:
 
 
 def _sample(load: Any, expected: str, units: FileUnits) -> tuple[Vector, Vector]:
-    if not load.is_a(expected):
+    if not is_kind(load, expected):
         raise LoadError(f"it mixes {load.is_a()} with {expected}")
     kinds = _FORCE_KINDS if expected == "IfcStructuralLoadSingleForce" else _LINEAR_KINDS
     return six(load, units, kinds)

@@ -13,6 +13,9 @@ MALFORMED = (
     AttributeError, IndexError, KeyError, TypeError, ValueError, RuntimeError, ArithmeticError,
 )  # fmt: skip
 
+# By class name with its schema (the same name may be derived otherwise in another schema).
+_KINDS: dict[tuple[str, str], bool] = {}
+
 
 class Notes:
     """Collects findings in order, each once."""
@@ -48,10 +51,22 @@ class Notes:
         return tuple(self._findings)
 
 
+def is_kind(entity: Any, ifc_class: str) -> bool:
+    """Whether an entity is of a class or of one derived from it.
+
+    Remembered by class: asking the library each time takes three times as long.
+    """
+    key = entity.is_a(True), ifc_class
+    known = _KINDS.get(key)
+    if known is None:
+        known = _KINDS[key] = bool(entity.is_a(ifc_class))
+    return known
+
+
 def global_id(entity: Any) -> str:
     """Return the GlobalId of a rooted entity, "" where it has none that can be used."""
     try:
-        value = entity[0] if entity.is_a("IfcRoot") else ""
+        value = entity[0] if is_kind(entity, "IfcRoot") else ""
     except MALFORMED:
         return ""
     return value if isinstance(value, str) else ""

@@ -11,7 +11,13 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import Any
 
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed
+from analysis_core.ifc.analytical_notes import (
+    MALFORMED,
+    Notes,
+    global_id,
+    is_kind,
+    listed,
+)
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.material_choice import NO_CHOICE, Choice
 from analysis_core.ifc.materials import MaterialReader, material_and_profile_of
@@ -136,7 +142,7 @@ class MemberProperties:
         """IFC2X3: the profile stands in the profile properties, with an orientation beside."""
         key = global_id(entity)
         orientation = next((r[7] for r in relations if r[7] is not None), None)
-        if orientation is not None and orientation.is_a("IfcDirection"):
+        if orientation is not None and is_kind(orientation, "IfcDirection"):
             result = replace(result, direction=orientation)
         elif orientation is not None:
             result = replace(result, angle=float(orientation.wrappedValue) * self._units.angle)
@@ -174,7 +180,7 @@ def _profile_relations(file: Any) -> dict[int, tuple[Any, ...]]:
 
 def _section_of_properties(properties: Any, units: FileUnits) -> Section | None:
     """Return the section that IfcStructuralProfileProperties (IFC2X3) state by their values."""
-    if not properties.is_a("IfcStructuralProfileProperties"):
+    if not is_kind(properties, "IfcStructuralProfileProperties"):
         return None
     area = units.to_si("AREAUNIT")
     inertia = units.to_si("MOMENTOFINERTIAUNIT")

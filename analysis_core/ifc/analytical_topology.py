@@ -11,8 +11,10 @@ from collections.abc import Iterator, Sequence
 from typing import Any
 
 from analysis_core.ifc import frames
-from analysis_core.ifc.curves import Measures, read_path, sampled
-from analysis_core.ifc.frames import Frame, Vector
+from analysis_core.ifc.analytical_notes import is_kind
+from analysis_core.ifc.curves import read_path
+from analysis_core.ifc.frames import WORLD, Frame, Vector
+from analysis_core.ifc.paths import Measures, sampled
 from analysis_core.ifc.placements import Placements
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
@@ -23,6 +25,7 @@ _DEEPEST_NESTING = 20
 # length; and at most 1 mm).
 _STRAIGHT = 1e-4
 _LEAST_SAG = 1e-3
+_PLAIN = ("IfcEdge", "IfcVertexPoint")
 
 
 class CurvedError(UnreadableShapeError):
@@ -35,11 +38,21 @@ class Topology:
     def __init__(self, file: Any, measures: Measures) -> None:
         self.placements = Placements(file, measures)
         self._measures = measures
+        self._frames: dict[int, Frame] = {}
+        self._points: dict[int, Vector] = {}
 
     def frame(self, product: Any, shared: Any = None) -> Frame:
         """Return the "global" system of an item: its placement, else that of its model."""
-        placement = product[5]
-        return self.placements.frame(placement if placement is not None else shared)
+        placement = product.get_argument(5)
+        if placement is None:
+            placement = shared
+        if placement is None:
+            return WORLD
+        key = placement.id()
+        frame = self._frames.get(key)
+        if frame is None:  # all items of a model share theirs
+            frame = self._frames[key] = self.placements.frame(placement)
+        return frame
 
     def straight(self, product: Any, frame: Frame) -> tuple[Vector, Vector] | None:
         """Return start and end of a product's reference curve, None where it has no curve.
@@ -63,7 +76,8 @@ class Topology:
 
     def has_shape(self, product: Any) -> bool:
         """Whether the product has a representation of its own."""
-        return product[6] is not None and bool(product[6][2])
+        shape = product.get_argument(6)
+        return shape is not None and bool(shape[2])
 
     def vertex(self, item: Any) -> Vector | None:
         """Return the coordinates (m) of a vertex or point in its own system, else None."""
@@ -72,12 +86,12 @@ class Topology:
     def curve_point(self, item: Any) -> Vector | None:
         """Return the coordinates (m) of a point on a curve, given by its parameter."""
         curve, parameter = item[0], float(item[1])
-        if curve.is_a("IfcLine"):
+        if is_kind(curve, "IfcLine"):
             origin = self._cartesian(curve[0])
             along = self.placements.direction(curve[1][0])
             size = float(curve[1][1]) * self._measures.length
             return frames.plus(origin, frames.unit(along), parameter * size)
-        if curve.is_a("IfcPolyline"):
+        if is_kind(curve, "IfcPolyline"):
             points = [self._cartesian(p) for p in curve[0]]
             index = min(max(int(parameter), 0), len(points) - 2)
             step = frames.minus(points[index + 1], points[index])
@@ -88,12 +102,12 @@ class Topology:
         """Yield the points of each curve-like item in the world, and whether it is curved."""
         curves: list[tuple[Any, Frame]] = []
         for item, place in _placed_items(product, frame, self):
-            if item.is_a("IfcEdge"):
+            if is_kind(item, "IfcEdge"):
                 points, curved = self._edge(item)
                 yield tuple(frames.point(place, *p) for p in points), curved
-            elif item.is_a("IfcEdgeLoop") or item.is_a("IfcPath"):
+            elif is_kind(item, "IfcEdgeLoop") or is_kind(item, "IfcPath"):
                 yield self._joined(item, place)
-            elif item.is_a("IfcCurve"):
+            elif is_kind(item, "IfcCurve"):
                 curves.append((item, place))
         for item, place in curves:
             points, curved = self._curve(item)
@@ -111,12 +125,12 @@ class Topology:
     def _edge(self, edge: Any, depth: int = 0) -> tuple[list[Vector], bool]:
         if depth > _DEEPEST_NESTING:
             raise UnreadableShapeError("its edges refer to each other in a circle")
-        if edge.is_a("IfcOrientedEdge"):
+        if is_kind(edge, "IfcOrientedEdge"):
             points, curved = self._edge(edge[2], depth + 1)
             return (points if edge[3] else points[::-1]), curved
         start, end = self._vertex(edge[0]), self._vertex(edge[1])
         curved = False
-        if edge.is_a("IfcEdgeCurve"):
+        if is_kind(edge, "IfcEdgeCurve"):
             along, curved = self._curve(edge[2])
             if not edge[3]:
                 along = along[::-1]
@@ -127,7 +141,7 @@ class Topology:
         return [start, end], curved
 
     def _curve(self, curve: Any) -> tuple[list[Vector], bool]:
-        if curve.is_a("IfcLine"):
+        if is_kind(curve, "IfcLine"):
             origin = self._cartesian(curve[0])
             along = frames.unit(self.placements.direction(curve[1][0]))
             size = float(curve[1][1]) * self._measures.length
@@ -139,18 +153,22 @@ class Topology:
     def _vertex(self, item: Any) -> Vector | None:
         if item is None:
             return None
-        if item.is_a("IfcVertexPoint"):
-            return self._vertex(item[0])
-        if item.is_a("IfcCartesianPoint"):
+        kind = item.is_a()
+        if kind == "IfcVertexPoint":
+            item = item[0]
+            kind = item.is_a()
+        if kind == "IfcCartesianPoint":
             return self._cartesian(item)
-        if item.is_a("IfcPointOnCurve"):
-            return self.curve_point(item)
-        return None
+        return self.curve_point(item) if kind == "IfcPointOnCurve" else None
 
     def _cartesian(self, point: Any) -> Vector:
-        x, y, z = _three(point[0])
-        scale = self._measures.length
-        return x * scale, y * scale, z * scale
+        key = point.id()
+        known = self._points.get(key)
+        if known is None:
+            x, y, z = _three(point[0])
+            scale = self._measures.length
+            known = self._points[key] = x * scale, y * scale, z * scale
+        return known
 
     def mapping(self, item: Any) -> Frame:
         """Return the frame into which a mapped item puts its representation."""
@@ -161,11 +179,15 @@ class Topology:
 
 def _placed_items(product: Any, frame: Frame, topology: Topology) -> Iterator[tuple[Any, Frame]]:
     """Yield the items of a product with the frame in which each stands."""
-    shape = product[6]
+    shape = product.get_argument(6)
     if shape is None:
         return
     for representation in shape[2] or ():
-        yield from _unpacked(representation[3] or (), frame, topology, 0)
+        items: Sequence[Any] = representation[3] or ()
+        if len(items) == 1 and items[0].is_a() in _PLAIN:
+            yield items[0], frame
+        else:
+            yield from _unpacked(items, frame, topology, 0)
 
 
 def _unpacked(
@@ -174,10 +196,10 @@ def _unpacked(
     if depth > _DEEPEST_NESTING:
         raise UnreadableShapeError("its mapped items are nested in a circle")
     for item in items:
-        if item.is_a("IfcMappedItem"):
+        if is_kind(item, "IfcMappedItem"):
             inner = frames.compose(frame, topology.mapping(item))
             yield from _unpacked(item[0][1][3] or (), inner, topology, depth + 1)
-        elif item.is_a("IfcGeometricSet"):
+        elif is_kind(item, "IfcGeometricSet"):
             yield from _unpacked(item[0] or (), frame, topology, depth + 1)
         else:
             yield item, frame
@@ -186,7 +208,7 @@ def _unpacked(
 def _operator_frame(operator: Any, placements: Placements, length: float) -> Frame:
     """Return the frame of an IfcCartesianTransformationOperator (IfcBaseAxis in the standard)."""
     scale = float(operator[3]) if operator[3] is not None else 1.0
-    has_z = len(operator) > 4 and operator.is_a("IfcCartesianTransformationOperator3D")
+    has_z = len(operator) > 4 and is_kind(operator, "IfcCartesianTransformationOperator3D")
     z = placements.direction(operator[4]) if has_z and operator[4] is not None else None
     x = placements.direction(operator[0]) if operator[0] is not None else None
     ox, oy, oz = _three(operator[2][0])

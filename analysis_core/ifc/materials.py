@@ -116,7 +116,10 @@ def material_and_profile_of(source: Any) -> dict[int, Choice]:
     choices: dict[int, Choice] = {}
     result: dict[int, Choice] = {}
     for key, select in relations.material_of.items():
-        result[key] = choices.setdefault(select.id(), choose(select))
+        number = select.id()
+        if number not in choices:  # thousands of elements share one
+            choices[number] = choose(select)
+        result[key] = choices[number]
     for key, type_ in relations.type_of.items():
         if key not in result and type_.id() in result:
             result[key] = result[type_.id()]
