@@ -131,6 +131,10 @@ def _balance_options(commands: Any) -> None:
         help="also check the resistance of the members, clause by clause",
     )  # fmt: skip
     command.add_argument(
+        "--reactions", metavar="FILE.csv",
+        help="write the reactions of every support and case as a spreadsheet",
+    )  # fmt: skip
+    command.add_argument(
         "--issues", metavar="FILE.bcf",
         help="write findings and failed checks as a BCF file, for any coordination viewer",
     )  # fmt: skip
@@ -210,6 +214,8 @@ def _balance(options: argparse.Namespace) -> int:
 
         checked = pipeline.checks(outcome, settings)
         text += "\n\n" + checks_text(outcome, checked, units)
+    if options.reactions:
+        _write(Path(options.reactions), pipeline.reactions_csv(outcome, settings))
     if options.issues:
         _write_bytes(Path(options.issues), pipeline.issues(outcome, checked))
     if options.record:
@@ -305,7 +311,7 @@ def _put(options: argparse.Namespace, document: Callable[[], Any], text: str) ->
 
 def _write(path: Path, text: str) -> None:
     try:
-        path.write_text(text, encoding="utf-8")
+        path.write_text(text, encoding="utf-8", newline="")
     except OSError as error:
         raise JobError(f"'{path}' cannot be written: {error.strerror or error}.") from None
 

@@ -278,6 +278,15 @@ def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     )
 
 
+def reactions_csv(outcome: Outcome, settings: Settings) -> str:
+    """Return the schedule of reactions as CSV in display units."""
+    from analysis_core.csv_text import csv_text
+    from analysis_core.effects.reactions import schedule, schedule_table
+
+    units = display_units(settings.display.system, settings.display.units)
+    return csv_text(schedule_table(schedule(outcome.lines), units, outcome.model.names))
+
+
 def issues(outcome: Outcome, checks: Mapping[str, tuple[MemberChecks, ...]] | None = None) -> bytes:
     """Return findings and failed checks as a BCF file."""
     from analysis_core.issues import bcf_bytes, issues_of

@@ -11,6 +11,7 @@ from typing import Any
 
 from analysis_core.effects.stations import stations as stations_of
 from analysis_core.findings import Finding
+from analysis_core.line_details import LineDetail, detail_of
 from analysis_core.model import Case, Combination, Joint, Line, Member, Support
 from analysis_core.results import Extreme, LineEnvelope, LineResult, LineSolution, Outcome
 
@@ -90,6 +91,8 @@ def _line(result: LineResult, stations: int) -> dict[str, Any]:
             "continuity_residual": result.verification.continuity_residual,
             "independent_check": result.verification.independent_check,
         }
+    if result.detail is not None:
+        data.update(_detail(detail_of(result)))
     if result.fingerprint:
         data["fingerprint"] = result.fingerprint
     return data
@@ -183,6 +186,56 @@ def _solution(line: Line, solution: LineSolution, stations: int) -> Mapping[str,
         }
         for r, name in enumerate(solution.cases)
     }
+
+
+def _detail(detail: LineDetail) -> dict[str, Any]:
+    data: dict[str, Any] = {
+        "deflections": [
+            {
+                "span": d.span.number,
+                "members": list(d.span.members),
+                "length": d.span.length,
+                "cantilever": d.span.cantilever,
+                "down": {**_extreme(d.down, "deflection"), "member": d.down_member},
+                "up": {**_extreme(d.up, "deflection"), "member": d.up_member},
+                "limit": d.limit,
+                "rule": d.rule,
+                "utilisation": d.utilisation,
+            }
+            for d in detail.deflections
+        ]
+    }
+    if detail.supports:
+        data["support_moments"] = [
+            {
+                "joint": s.joint,
+                "member": s.member,
+                "end": s.end,
+                "width": s.width,
+                **{
+                    key: None if extreme is None else _extreme(extreme, "moment")
+                    for key, extreme in (
+                        ("axis", s.axis),
+                        ("face", s.face),
+                        ("rounded", s.rounded),
+                        ("fixed_end", s.fixed_end),
+                    )
+                },
+            }
+            for s in detail.supports
+        ]
+    if detail.redistributed is not None:
+        found = detail.redistributed
+        data["redistribution"] = {
+            "fractions": {str(joint): part for joint, part in found.fractions.items()},
+            "allowed": None if found.limit is None else found.limit.fraction,
+            "clause": None if found.limit is None else found.limit.clause,
+            "conditions": [] if found.limit is None else list(found.limit.conditions),
+            "unmet": list(found.unmet),
+            "problem": found.problem,
+            "envelope": None if found.envelope is None else _envelope(found.envelope),
+        }
+    return data
 
 
 def _envelope(envelope: LineEnvelope) -> dict[str, Any]:

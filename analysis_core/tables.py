@@ -12,6 +12,7 @@ from collections import Counter
 from collections.abc import Callable, Iterable, Sequence
 
 from analysis_core.findings import Finding, Severity
+from analysis_core.line_details import Redistributed, detail_of
 from analysis_core.model import Joint, Line, LineModel, Member, Support
 from analysis_core.results import Extreme, LineResult, MemberEnvelope, Outcome
 from analysis_core.units import DisplayUnits
@@ -47,6 +48,7 @@ def balance_text(outcome: Outcome, units: DisplayUnits) -> str:
     if outcome.rules:
         parts.append(f"Rules: {safe(outcome.rules)}; {len(model.combinations)} combinations.")
     parts.append(_effects_table(outcome, units))
+    parts.append(_redistribution_text(outcome, units))
     parts.append(_reactions_table(outcome, units))
     parts.append(_verification_text(outcome, units))
     parts.append(findings_text(outcome.findings))
@@ -170,15 +172,15 @@ def _cases_text(model: LineModel) -> str:
 
 def _effects_table(outcome: Outcome, units: DisplayUnits) -> str:
     head = ("line", "span", "length", "sagging", "at", "hogging", "at", "shear", "at",
-            "deflection", "at", "ratio")  # fmt: skip
+            "deflection", "at", "ratio", "of limit")  # fmt: skip
     length, moment = units.symbol("length"), units.symbol("moment")
     below = ("", "", length, moment, length, moment, length, units.symbol("force"), length,
-             units.symbol("deflection"), length, "")  # fmt: skip
+             units.symbol("deflection"), length, "", "")  # fmt: skip
     rows: list[Sequence[str]] = []
     sources: list[str] = []
     for result in outcome.lines:
         if result.status != "balanced":
-            rows.append((safe(result.line.mark), "not analysed", *[""] * 10))
+            rows.append((safe(result.line.mark), "not analysed", *[""] * 11))
             continue
         for name, members in spans_of(result.line):
             rows.append(_effects_row(result, name, members, units))
@@ -212,14 +214,26 @@ def _effects_row(
     length = sum(member.length for member, _ in members)
     row = [safe(result.line.mark), name, units.number(length, "length")]
     strength = [(_envelope_of(result, "strength", m), at) for m, at in members]
-    service = [(_envelope_of(result, "serviceability", m), at) for m, at in members]
     for pick, choose, quantity in _COLUMNS:
         found = [(pick(e), at) for e, at in strength if e is not None]
         row += _extreme_cells(found, choose, quantity, units)
-    found = [(_deflection(e), at) for e, at in service if e is not None]
-    row += _extreme_cells(found, _largest, "deflection", units)
-    worst = max((abs(e.value) for e, _ in found), default=0.0)
-    return [*row, f"L/{length / worst:.0f}" if worst > 1e-9 else "-"]
+    return [*row, *_deflection_cells(result, name, members, units)]
+
+
+def _deflection_cells(
+    result: LineResult, name: str, members: list[tuple[Member, float]], units: DisplayUnits
+) -> list[str]:
+    """Largest deflection from the supports of the span, its place, ratio and use of the limit."""
+    span = next((d for d in detail_of(result).deflections if str(d.span.number) == name), None)
+    if span is None:
+        return ["-"] * 4
+    offsets = {member.id: at for member, at in members}
+    down = abs(span.down.value) >= abs(span.up.value)
+    worst, member = (span.down, span.down_member) if down else (span.up, span.up_member)
+    ratio = f"L/{span.span.length / abs(worst.value):.0f}" if abs(worst.value) > 1e-9 else "-"
+    use = "-" if span.utilisation is None else f"{span.utilisation:.2f}"
+    place = units.number(offsets[member] + worst.x, "length")
+    return [units.number(worst.value, "deflection"), place, ratio, use]
 
 
 def _extreme_cells(
@@ -241,10 +255,6 @@ def _largest(extreme: Extreme) -> float:
 
 def _shear(envelope: MemberEnvelope) -> Extreme:
     return max(envelope.shear_max, envelope.shear_min, key=_largest)
-
-
-def _deflection(envelope: MemberEnvelope) -> Extreme:
-    return max(envelope.deflection_down, envelope.deflection_up, key=_largest)
 
 
 _COLUMNS: tuple[
@@ -274,6 +284,50 @@ def _governing(result: LineResult) -> list[str]:
         f"  {safe(result.line.mark)}: sagging by {safe(best.source)}; "
         f"hogging by {safe(worst.source)}"
     ]
+
+
+def _redistribution_text(outcome: Outcome, units: DisplayUnits) -> str:
+    """Elastic and redistributed moments of the lines where redistribution was asked for."""
+    rows = []
+    notes = []
+    for result in outcome.lines:
+        found = detail_of(result).redistributed if result.detail else None
+        if found is None:
+            continue
+        mark = safe(result.line.mark)
+        if found.limit is not None:
+            notes.append(f"  {mark}: {safe(_limit_text(found))}")
+        if found.envelope is None:
+            notes.append(f"  {mark}: not redistributed. {safe(found.problem)}")
+            continue
+        elastic = result.envelopes["strength"]
+        for before, after in zip(elastic.members, found.envelope.members, strict=True):
+            rows.append((
+                mark,
+                str(result.line.members[before.member].span or before.member),
+                units.number(before.sagging.value, "moment"),
+                units.number(after.sagging.value, "moment"),
+                units.number(before.hogging.value, "moment"),
+                units.number(after.hogging.value, "moment"),
+            ))  # fmt: skip
+    if not rows and not notes:
+        return ""
+    moment = units.symbol("moment")
+    head = ("line", "span", "sagging elastic", "redistributed", "hogging elastic", "redistributed")
+    text = table(head, ("", "", *[moment] * 4), rows) if rows else ""
+    return "\n".join(["Redistribution", *([text] if text else []), *notes])
+
+
+def _limit_text(found: Redistributed) -> str:
+    """What the rule set allows, on what conditions, and whether more was stated."""
+    assert found.limit is not None
+    limit = found.limit
+    if limit.missing:
+        return f"the limit of {limit.clause} could not be found: {limit.missing}"
+    text = f"at most {100.0 * limit.fraction:.0f} % by {limit.clause}"
+    if any(part > limit.fraction + 1e-12 for part in found.fractions.values()):
+        text += ", WHICH IS EXCEEDED"
+    return "; ".join((text, *limit.conditions, *found.unmet))
 
 
 def _reactions_table(outcome: Outcome, units: DisplayUnits) -> str:
