@@ -25,7 +25,7 @@ from building_makers import (
 )
 
 from analysis_core import distribution
-from analysis_core.building import AxisAction, NodeAction, Restraint, TemperatureAction
+from analysis_core.building import Attachment, AxisAction, NodeAction, Restraint, TemperatureAction
 from analysis_core.idealise import idealise
 from analysis_core.model import JointForce, JointMovement, PointForce, Support
 from analysis_core.settings import Settings
@@ -405,3 +405,23 @@ def test_a_lone_column_is_seen_in_the_plane_of_its_depth():
     assert line.kind == "frame"
     assert line.axis == (0.0, 1.0, 0.0)
     assert line.actions == (JointForce("W", 1, 5e3, 0.0, 0.0, "p"),)
+
+
+def test_a_beam_drawn_between_column_faces_keeps_its_load_when_it_is_taken_to_the_nodes():
+    """Drawn 5.4 m long between nodes 6 m apart: 5.4 kN at 1 kN/m, spread over 6 m."""
+    members, nodes = portal()
+    members[2] = member("B", (0.3, 0.0, H), (L - 0.3, 0.0, H))
+    action = uniform("q", "B", (0.0, 0.0, -1e3), 5.4)
+    building = model(members, nodes, actions=[action])
+    building = replace(
+        building,
+        attachments=(
+            *building.attachments,
+            Attachment("B", "b", 0.0, eccentricity=(0.3, 0.0, 0.0)),
+            Attachment("B", "c", 5.4, eccentricity=(-0.3, 0.0, 0.0)),
+        ),
+    )
+    (force,) = only(idealise(building, Settings())).actions
+
+    assert (force.start, force.end) == (0.0, pytest.approx(6.0))
+    assert force.transverse == pytest.approx((900.0,))
