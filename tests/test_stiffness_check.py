@@ -312,3 +312,28 @@ def _spoilt(solution: LineSolution, kind: str, share: float) -> LineSolution:
     place = np.unravel_index(np.abs(values).argmax(), values.shape)
     values[place] *= 1.0 + share
     return replace(solution, **{kind: values})
+
+
+def test_one_line_that_cannot_be_checked_spoils_no_other():
+    line = _line([PIN, PIN], [Member(0, 0, 1, (Piece(5.0, (1e7,)),))])
+    loaded = replace(line, actions=(DistributedForce("q", 0, 0.0, 5.0, (8e3,)),))
+    solution = solve_stiffness(loaded, ["q"])
+    pulled = replace(line, actions=(JointMovement("q", 1, rotation=0.01),))
+
+    found = largest_differences([solution] * 9 + [replace(solution, line=pulled)])
+
+    assert found[:9] == [pytest.approx(0.0, abs=1e-14)] * 9
+    assert found[9] == math.inf
+
+
+@pytest.mark.parametrize("springs", [(FREE, FREE), (RIGID, RIGID)])
+@pytest.mark.parametrize("support", [PIN, FIXED])
+def test_a_span_with_nothing_left_to_solve_for(support: Support, springs: tuple[float, float]):
+    member = Member(0, 0, 1, (Piece(5.0, (1e7,)),), "span", *springs)
+    line = _line([support, support], [member])
+    line = replace(line, actions=(DistributedForce("q", 0, 0.0, 5.0, (8e3,)),))
+    solution = distribution.solve(line, ["q"])
+
+    assert solution.end_shears[0, 0].tolist() == [20e3, -20e3]
+    assert largest_difference(solution) < 1e-14
+    assert largest_differences([solution] * 10) == [pytest.approx(0.0, abs=1e-14)] * 10

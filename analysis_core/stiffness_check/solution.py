@@ -82,11 +82,11 @@ def solve_group(
     pattern: Pattern, lines: Sequence[Line], cases: Sequence[Sequence[str]]
 ) -> Solved | None:
     """Solve lines of one pattern together; None where one of them has no unique solution."""
-    arrays = gather(lines, cases)
     numbers = numbering(pattern)
-    if any(np.any(arrays.forces[:, joint, d]) for joint, d in numbers.loose):
-        return None
     try:
+        arrays = gather(lines, cases)
+        if any(np.any(arrays.forces[:, joint, d]) for joint, d in numbers.loose):
+            return None
         found = solve_together(equations(pattern, numbers, arrays))
     except (SingularError, ModelError):
         return None
