@@ -350,7 +350,8 @@ def _section(data: Mapping[str, Any], where: str) -> SectionSetting:
         if not 0.0 <= pair[0] <= 1.0 or pair[1] <= 0.0:
             raise JobError(f"'{where}.taper[{i}]' must lie from 0 to 1, with a positive depth.")
         taper.append((float(pair[0]), float(pair[1])))
-    if taper and (taper[0][0] != 0.0 or taper[-1][0] != 1.0 or taper != sorted(taper)):
+    places = [place for place, _ in taper]
+    if taper and (places[0] != 0.0 or places[-1] != 1.0 or places != sorted(places)):
         raise JobError(f"'{where}.taper' must go from 0 to 1 in order.")
     return SectionSetting(on=_selector(data["on"]), taper=tuple(taper), source=where, **known)
 
