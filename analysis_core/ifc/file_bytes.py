@@ -20,6 +20,7 @@ _BYTE_ORDER_MARKS = (
     (b"\xff\xfe", "utf-16-le"),
     (b"\xfe\xff", "utf-16-be"),
 )
+_BLANK = b"\0 \t\r\n"
 _RAW_TEXT = re.compile(rb"[\x80-\xff]+")
 
 
@@ -64,7 +65,7 @@ def _stored_bytes(path: Path) -> bytes:
         raise IfcReadError(f"'{name}' {reason}.") from None
     except (OSError, ValueError) as error:
         raise IfcReadError(f"'{name}' cannot be read ({error}); check the path.") from None
-    if not data.strip(b"\0 \t\r\n"):
+    if not data[:1000].strip(_BLANK) and not data.strip(_BLANK):
         raise IfcReadError(f"'{name}' is empty: it holds no model. Copy or export it again.")
     return data
 

@@ -17,6 +17,7 @@ from analysis_core.findings import Finding
 from analysis_core.ifc.file_bytes import read_bytes
 from analysis_core.ifc.file_units import FileUnits, read_units
 from analysis_core.ifc.schema_fit import check_fit, parser_schema, public_name
+from analysis_core.ifc.step_census import Ints
 from analysis_core.ifc.step_text import StepText, line_of, read_step
 
 _parser: Any = ifcopenshell.open  # its published overloads leave out ``lazy``
@@ -64,8 +65,8 @@ def open_model(path: str | Path) -> Source:
     findings += _text_findings(text, name)
     data = _with_schema(text, parser_name)
     as_is = stored.as_is and data is stored.data
-    file = _parse(path if as_is else None, data, text, name)
-    _prove(file, text, name)
+    file, numbers = _parse(path if as_is else None, data, text, name)
+    _prove(numbers, text, name)
     schema = public_name(parser_name)
     units, unit_findings = read_units(file, name)
     findings += unit_findings
@@ -112,8 +113,11 @@ def _with_schema(text: StepText, parser_name: str) -> bytes:
     return header + text.clean[len(text.header) :]
 
 
-def _parse(path: Path | None, data: bytes, text: StepText, name: str) -> Any:
-    """Return the parsed file, from ``path`` or, where None, from a copy of ``data``."""
+def _parse(path: Path | None, data: bytes, text: StepText, name: str) -> tuple[Any, Ints]:
+    """Return the parsed file and the numbers of its entities.
+
+    From ``path`` or, where that is None, from a copy of ``data``.
+    """
     try:
         if path is not None:
             return _open(path, text)
@@ -127,23 +131,25 @@ def _parse(path: Path | None, data: bytes, text: StepText, name: str) -> Any:
         ) from error
 
 
-def _open(path: Path, text: StepText) -> Any:
+def _open(path: Path, text: StepText) -> tuple[Any, Ints]:
     """Open lazily, which is three times as fast; with several DATA sections that loses all but
     the first, and then the plain way is taken."""
     if text.data_sections == 1:
         file = _parser(path, format=".ifc", lazy=True)
-        if _numbers(file).size == text.count:
-            return file
-    return _parser(path, format=".ifc")
+        numbers = _numbers(file)
+        if numbers.size == text.count:
+            return file, numbers
+    file = _parser(path, format=".ifc")
+    return file, _numbers(file)
 
 
-def _numbers(file: Any) -> np.ndarray[Any, np.dtype[np.int64]]:
+def _numbers(file: Any) -> Ints:
     return np.array(file.entity_names(), dtype=np.int64)
 
 
-def _prove(file: Any, text: StepText, name: str) -> None:
+def _prove(numbers: Ints, text: StepText, name: str) -> None:
     """Compare the entities read with the instances counted in the bytes."""
-    read = np.sort(_numbers(file))
+    read = np.sort(numbers)
     counted = np.sort(text.ids)
     if read.size == counted.size and (read == counted).all():
         return

@@ -49,9 +49,13 @@ def blank(data: bytes) -> Blanked:
         text = bytes(spaced)
     raw = np.frombuffer(text, np.uint8)
     quotes = raw == ord("'")
-    inside = np.bitwise_xor.accumulate(quotes)
-    position = int(np.flatnonzero(quotes)[-1]) if inside.size and inside[-1] else -1
-    return Blanked((raw * (quotes | ~inside)).tobytes(), comments, stray, position)
+    marks = np.flatnonzero(quotes)
+    # Stretches between apostrophes lie outside and inside of texts by turns.
+    stretches = np.diff(marks, prepend=0, append=raw.size)
+    outside = np.repeat(np.arange(stretches.size) % 2 == 0, stretches)
+    position = int(marks[-1]) if marks.size % 2 else -1
+    kept = (quotes | outside).view(np.uint8)
+    return Blanked(np.multiply(raw, kept).tobytes(), comments, stray, position)
 
 
 def _comments(text: bytes) -> tuple[tuple[Span, ...], tuple[Span, ...]]:
