@@ -18,7 +18,7 @@ from __future__ import annotations
 
 import hashlib
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from itertools import pairwise
 
@@ -31,6 +31,7 @@ MODEL = "analysis model"
 # Readers commonly keep instance numbers in 32 signed bits.
 _LARGEST_NUMBER = 2**31 - 1
 _ROOM = 2**26
+_CHUNK = 8192
 _NUMBERS = re.compile(rb"(?:^|[\r\n])#(\d+)=")
 
 
@@ -52,16 +53,20 @@ class Lines:
     ``shared`` gives instances of equal text one number: properties may stand in many sets.
     """
 
-    def __init__(self, first: int) -> None:
-        self.first = self.next = first
+    def __init__(self, first: int, newline: bytes) -> None:
+        self.next = first
+        self._end = f";{newline.decode()}"
         self._lines: list[str] = []
+        self._chunks: list[bytes] = []
         self._shared: dict[str, int] = {}
 
     def add(self, body: str) -> int:
         """Add an instance, given without number and semicolon; return its number."""
         number = self.next
-        self._lines.append(f"#{number}={body};")
         self.next = number + 1
+        self._lines.append(f"#{number}={body}{self._end}")
+        if len(self._lines) >= _CHUNK:
+            self._flush()
         return number
 
     def shared(self, body: str) -> int:
@@ -75,20 +80,28 @@ class Lines:
         """Return references to instances with these texts."""
         return references(map(self.shared, bodies))
 
-    def body(self, number: int) -> str:
-        """Return the text of an instance added here."""
-        line = self._lines[number - self.first]
-        return line[line.index("=") + 1 : -1]
+    def form(self, bodies: Iterable[str]) -> str:
+        """Return a format string for instances that are written together, for ``add_text``.
 
-    def __len__(self) -> int:
-        return len(self._lines)
+        Each begins with a place for its number.
+        """
+        return "".join(f"#%d={body}{self._end}" for body in bodies)
 
-    def text(self, newline: bytes) -> bytes:
-        """Return the lines, each with its line end."""
-        if not self._lines:
-            return b""
-        end = newline.decode()
-        return (end.join(self._lines) + end).encode("ascii")
+    def add_text(self, text: str, count: int) -> None:
+        """Add so many instances as they are, numbered by the caller from ``next`` on."""
+        self._lines.append(text)
+        self.next += count
+
+    def chunks(self) -> list[bytes]:
+        """Return the lines, each with its line end, in pieces."""
+        self._flush()
+        return self._chunks
+
+    def _flush(self) -> None:
+        # In pieces, so that the whole is never held as text and as bytes at once.
+        if self._lines:
+            self._chunks.append("".join(self._lines).encode("ascii"))
+            self._lines = []
 
 
 def first_free(index: StepIndex, kept: bytes = b"") -> int:
@@ -98,7 +111,7 @@ def first_free(index: StepIndex, kept: bytes = b"") -> int:
     then the widest gap below is taken.
     """
     own = [int(n) for n in _NUMBERS.findall(kept)]
-    largest = max([index.largest_id, *own])
+    largest = max([index.largest_number, *own])
     if largest < _LARGEST_NUMBER - _ROOM:
         return largest + 1
     taken = sorted({0, *index.numbers, *own, _LARGEST_NUMBER})
@@ -108,19 +121,21 @@ def first_free(index: StepIndex, kept: bytes = b"") -> int:
     return widest + 1
 
 
-def with_block(index: StepIndex, lines: bytes, kind: str) -> list[bytes | memoryview]:
+def with_block(index: StepIndex, lines: Sequence[bytes], kind: str) -> list[bytes | memoryview]:
     """Return the file, in parts, with a block of ``lines`` before the end of its data.
 
     Without marks where the file opens a comment and never closes it: ours would.
     """
-    assert index.data_end is not None  # the caller has seen to it
     view = memoryview(index.data)
+    if not any(lines):
+        return [view]
+    assert index.data_end is not None  # the caller has seen to it
     before, after = view[: index.data_end], view[index.data_end :]
     if index.stray:
-        return [before, lines, after]
+        return [before, *lines, after]
     begin = f"/* Spanledger {kind} begin {_digest(index.data)} */".encode() + index.newline
-    end = f"/* Spanledger {kind} end {_digest(lines)} */".encode() + index.newline
-    return [before, begin, lines, end, after]
+    end = f"/* Spanledger {kind} end {_digest(*lines)} */".encode() + index.newline
+    return [before, begin, *lines, end, after]
 
 
 def cut_block(data: bytes, kind: str) -> Cut | None:
@@ -154,5 +169,8 @@ def _last_mark(data: bytes, start: str) -> re.Match[bytes] | None:
     return re.compile(pattern).match(data, at) if at >= 0 else None
 
 
-def _digest(data: bytes) -> str:
-    return hashlib.sha256(data).hexdigest()
+def _digest(*pieces: bytes) -> str:
+    total = hashlib.sha256()
+    for piece in pieces:
+        total.update(piece)
+    return total.hexdigest()

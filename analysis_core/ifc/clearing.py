@@ -16,7 +16,8 @@ from analysis_core.ifc.excise import excise
 from analysis_core.ifc.ours import Ours, find_ours, related_elements
 from analysis_core.ifc.property_sets import PREFIX
 from analysis_core.ifc.set_contents import SetContents, contents_in_block, contents_in_file
-from analysis_core.ifc.step_index import StepIndex, reference
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_tokens import reference
 
 Path = Literal["append", "general"]
 
@@ -151,7 +152,7 @@ def _left(
 
 def _results(index: StepIndex, group: int) -> set[int]:
     """The result groups of an analysis model."""
-    if index.keyword(index.row(group)) != "IFCSTRUCTURALANALYSISMODEL":
+    if index.kind(group) != "IFCSTRUCTURALANALYSISMODEL":
         return set()
     results = index.arguments(group)[8]
     found = map(reference, results) if isinstance(results, list) else ()
@@ -162,7 +163,7 @@ def _members(index: StepIndex, group: int) -> set[int]:
     """What is assigned to a group."""
     members: set[int] = set()
     for relation in index.referrers([group]).get(group, ()):
-        if index.keyword(index.row(relation)) == "IFCRELASSIGNSTOGROUP":
+        if index.kind(relation) == "IFCRELASSIGNSTOGROUP":
             related = index.arguments(relation)[4]
             found = map(reference, related) if isinstance(related, list) else ()
             members.update(n for n in found if n is not None)

@@ -6,12 +6,12 @@ of a relation with nobody goes too.  Nothing that others refer to is ever taken.
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterable, Mapping
 
 from analysis_core.ifc.append import mark_spans
 from analysis_core.ifc.schema_classes import is_a
-from analysis_core.ifc.step_index import StepIndex, reference
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_tokens import reference, rendered
 
 _APPLICATION = "'Spanledger'"
 _OWNER_CLASSES = frozenset(
@@ -23,7 +23,6 @@ _OWNER_CLASSES = frozenset(
         "IFCAPPLICATION",
     }
 )
-_TYPE_NAME = re.compile(r"(?:^|[(,])[A-Z][A-Z0-9_]*$")
 
 
 def excise(
@@ -74,21 +73,17 @@ class _Excision:
 
     def rewrite(self, instance: int, attributes: list[object]) -> None:
         """Give an instance other attributes."""
-        keyword = self._index.keyword(self._index.row(instance))
-        self._rewritten[instance] = f"#{instance}={keyword}{_rendered(attributes)};"
+        keyword = self._index.kind(instance)
+        self._rewritten[instance] = f"#{instance}={keyword}{rendered(attributes)};"
 
     def result(self, marks_of: str) -> bytes:
         """Return the file without what goes."""
         data = self._index.data
         cuts: list[tuple[int, int, bytes]] = []
         for instance in self._doomed:
-            row = self._index.row(instance)
-            start, end = int(self._index.starts[row]), int(self._index.ends[row])
-            cuts.append((*_whole_line(data, start, end), b""))
+            cuts.append((*_whole_line(data, *self._index.span(instance)), b""))
         for instance, text in self._rewritten.items():
-            row = self._index.row(instance)
-            start, end = int(self._index.starts[row]), int(self._index.ends[row])
-            cuts.append((start, end, text.encode("utf-8", "surrogateescape")))
+            cuts.append((*self._index.span(instance), text.encode("utf-8", "surrogateescape")))
         if marks_of:
             cuts += [(*span, b"") for span in mark_spans(data, self._index.comments, marks_of)]
         parts, at = [], 0
@@ -116,7 +111,7 @@ class _Excision:
         return True
 
     def _may_go(self, instance: int) -> bool:
-        keyword = self._index.keyword(self._index.row(instance))
+        keyword = self._index.kind(instance)
         if keyword in _OWNER_CLASSES:
             return self._is_our_owner(instance)
         return not self._is_a(instance, "IfcRoot", unknown=True)
@@ -136,7 +131,7 @@ class _Excision:
 
     def _is_a(self, instance: int, ancestor: str, *, unknown: bool) -> bool:
         """Whether an instance is of a class; ``unknown`` where the schema does not know its own."""
-        keyword = self._index.keyword(self._index.row(instance))
+        keyword = self._index.kind(instance)
         return is_a(self._index.schema, keyword, ancestor, unknown=unknown)
 
 
@@ -155,15 +150,3 @@ def _whole_line(data: bytes, start: int, end: int) -> tuple[int, int]:
     if data[last : last + 1] in (b"\n", b"\r"):
         return first, last + 1
     return start, end
-
-
-def _rendered(attributes: list[object]) -> str:
-    """Return attributes as text; a type stands before its value without a comma."""
-    text = ""
-    for token in attributes:
-        if isinstance(token, list):
-            typed = _TYPE_NAME.search(text)
-            text += ("" if typed or not text else ",") + _rendered(token)
-        else:
-            text += ("," if text else "") + str(token)
-    return f"({text})"

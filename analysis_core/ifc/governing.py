@@ -7,8 +7,8 @@ element.  Positions here count from the element's own start; signs stay those of
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Iterable, Mapping
-from dataclasses import dataclass
+from collections.abc import Callable, Sequence
+from typing import NamedTuple
 
 import numpy as np
 
@@ -17,12 +17,9 @@ from analysis_core.results import Extreme, Floats, LineResult, MemberEnvelope, O
 
 STRENGTH = "strength"
 SERVICEABILITY = "serviceability"
-STEP_WIDTH = 1e-6
-"""Where a diagram jumps, its two values stand this far apart, m: positions must differ."""
 
 
-@dataclass(frozen=True, slots=True)
-class Part:
+class Part(NamedTuple):
     """One member of an element, with the result of its line."""
 
     result: LineResult
@@ -36,179 +33,244 @@ class Part:
     @property
     def start(self) -> float:
         """Position of that end of the member which is nearer to the element's start."""
-        length = self.member.length if self.member.reversed_ else 0.0
-        return self.position(length)
+        return self.position(self.member.length if self.member.reversed_ else 0.0)
 
 
-@dataclass(frozen=True, slots=True, eq=False)
-class Curve:
-    """Values at strictly increasing positions (m) along an element."""
+class Curve(NamedTuple):
+    """Values of the property ``name`` at ascending positions (m) along an element.
 
+    A position stands twice where the values jump.
+    """
+
+    name: str
     positions: Floats
     values: Floats
 
 
-@dataclass(frozen=True, slots=True, eq=False)
-class ElementEffects:
+class ElementEffects(NamedTuple):
     """Governing effects of one element; an ``Extreme`` here holds the element's position.
 
-    ``curves`` by property name; empty where the limit state was not analysed.
+    ``results`` are the lines it belongs to, ``curves`` its diagrams: none of a limit state that
+    was not analysed.
     """
 
     element: str
-    parts: tuple[Part, ...]
+    results: tuple[LineResult, ...]
     sagging: Extreme
     hogging: Extreme
     shear: Extreme
     deflection: Extreme
     start_moment: tuple[float, float]
     end_moment: tuple[float, float]
-    curves: Mapping[str, Curve]
-
-    @property
-    def results(self) -> tuple[LineResult, ...]:
-        """The lines the element belongs to, each once."""
-        return tuple({id(part.result): part.result for part in self.parts}.values())
+    curves: tuple[Curve, ...]
 
     @property
     def marks(self) -> str:
-        """The marks of these lines."""
+        """The marks of its lines."""
         return ", ".join(dict.fromkeys(result.line.mark for result in self.results))
 
     @property
     def finite(self) -> bool:
-        """Whether every value is a number that can be written."""
+        """Whether every single value is a number; the curves are looked at in bulk elsewhere."""
         extremes = (self.sagging, self.hogging, self.shear, self.deflection)
-        numbers = [e.value for e in extremes] + [e.x for e in extremes]
-        numbers += [*self.start_moment, *self.end_moment]
-        return all(map(math.isfinite, numbers)) and all(
-            np.isfinite(c.values).all() and np.isfinite(c.positions).all()
-            for c in self.curves.values()
-        )
+        # A sum with an infinity or a not-a-number in it is not finite.
+        total = sum(self.start_moment) + sum(self.end_moment)
+        return math.isfinite(total + sum([e.value + e.x for e in extremes]))
+
+
+class _Found(NamedTuple):
+    part: Part
+    state: str
+    envelope: MemberEnvelope
 
 
 def element_parts(outcome: Outcome) -> dict[str, list[Part]]:
     """Return the members of each element in every balanced line, in the order of the lines."""
     parts: dict[str, list[Part]] = {}
     for result in outcome.lines:
-        if result.status != "balanced":
-            continue
-        for member in result.line.members:
-            if member.element:
-                parts.setdefault(member.element, []).append(Part(result, member))
+        if result.status == "balanced":
+            for member in result.line.members:
+                if member.element:
+                    parts.setdefault(member.element, []).append(Part(result, member))
     return parts
 
 
-def element_effects(element: str, parts: Iterable[Part]) -> ElementEffects | None:
+def element_effects(element: str, parts: Sequence[Part]) -> ElementEffects | None:
     """Return what governs over all members of an element, None where nothing was enveloped.
 
     Moments and shears govern over every limit state; deflections over serviceability, and over
     strength only where nothing else was analysed.
     """
-    ordered = tuple(sorted(parts, key=lambda part: part.start))
-    found = [(part, state, envelope) for part in ordered for state, envelope in _envelopes(part)]
+    if len(parts) == 1 and (alone := _alone(element, parts[0])) is not None:
+        return alone
+    ordered = sorted(parts, key=lambda part: part.start)
+    found = [each for part in ordered for each in _envelopes(part)]
     if not found:
         return None
-    service = [f for f in found if f[1] == SERVICEABILITY] or found
-    both = [(part, envelope) for part, _, envelope in found]
-    serviceable = [(part, envelope) for part, _, envelope in service]
+    service = [each for each in found if each.state == SERVICEABILITY] or found
+    results = [part.result for part in ordered]
     return ElementEffects(
-        element=element,
-        parts=ordered,
-        sagging=_governing(both, lambda e: [e.sagging], float),
-        hogging=_governing(both, lambda e: [e.hogging], lambda v: -v),
-        shear=_governing(both, lambda e: [e.shear_max, e.shear_min], abs),
-        deflection=_governing(serviceable, lambda e: [e.deflection_down, e.deflection_up], abs),
-        start_moment=_end_range(both, ordered[0], at_start=True),
-        end_moment=_end_range(both, ordered[-1], at_start=False),
-        curves=_curves(found),
+        element,
+        tuple(results if len(results) == 1 else {id(r): r for r in results}.values()),
+        _governing([(e.envelope.sagging, e.part) for e in found], max, _value),
+        _governing([(e.envelope.hogging, e.part) for e in found], min, _value),
+        _governing(
+            [(x, e.part) for e in found for x in (e.envelope.shear_max, e.envelope.shear_min)],
+            max,
+            _size,
+        ),
+        _governing(
+            [
+                (x, e.part)
+                for e in service
+                for x in (e.envelope.deflection_down, e.envelope.deflection_up)
+            ],
+            max,
+            _size,
+        ),
+        _end_range(found, ordered[0], at_start=True),
+        _end_range(found, ordered[-1], at_start=False),
+        tuple(_curves(found)),
     )
 
 
-def _envelopes(part: Part) -> list[tuple[str, MemberEnvelope]]:
+def _alone(element: str, part: Part) -> ElementEffects | None:
+    """The same for what most elements are: one whole member, both limit states analysed."""
+    result, member = part
+    strength, service = result.envelopes.get(STRENGTH), result.envelopes.get(SERVICEABILITY)
+    if strength is None or service is None or len(result.envelopes) > 2:
+        return None
+    if member.reversed_ or member.element_offset:
+        return None
+    u, s = strength.members[member.id], service.members[member.id]
+    if u.member != member.id or s.member != member.id:
+        return None
+    return ElementEffects(
+        element,
+        (result,),
+        u.sagging if u.sagging.value >= s.sagging.value else s.sagging,
+        u.hogging if u.hogging.value <= s.hogging.value else s.hogging,
+        _larger(_larger(u.shear_max, u.shear_min), _larger(s.shear_max, s.shear_min)),
+        _larger(s.deflection_down, s.deflection_up),
+        _both(u.start_moment, s.start_moment),
+        _both(u.end_moment, s.end_moment),
+        (
+            Curve("MomentMax", u.x, u.moment_max),
+            Curve("MomentMin", u.x, u.moment_min),
+            Curve("ShearMax", u.x, u.shear_max_at),
+            Curve("ShearMin", u.x, u.shear_min_at),
+            Curve("DeflectionMax", s.x, s.deflection_max),
+            Curve("DeflectionMin", s.x, s.deflection_min),
+        ),
+    )
+
+
+def _larger(first: Extreme, second: Extreme) -> Extreme:
+    return first if abs(first.value) >= abs(second.value) else second
+
+
+def _both(first: tuple[float, float], second: tuple[float, float]) -> tuple[float, float]:
+    return min(first[0], second[0]), max(first[1], second[1])
+
+
+def _envelopes(part: Part) -> list[_Found]:
     """The part's envelopes, strength first, so that it is named where both are equal."""
     found = []
-    for state in sorted(part.result.envelopes, key=lambda s: s != STRENGTH):
-        members = part.result.envelopes[state].members
-        number = part.member.id
+    number = part.member.id
+    envelopes = part.result.envelopes
+    for state in sorted(envelopes, key=_strength_first) if len(envelopes) > 1 else envelopes:
+        members = envelopes[state].members
         if number < len(members) and members[number].member == number:
-            found.append((state, members[number]))
+            found.append(_Found(part, state, members[number]))
         else:
-            found += [(state, m) for m in members if m.member == number]
+            found += [_Found(part, state, m) for m in members if m.member == number]
     return found
 
 
+def _strength_first(state: str) -> bool:
+    return state != STRENGTH
+
+
+_Candidate = tuple[Extreme, Part]
+
+
+def _value(candidate: _Candidate) -> float:
+    return candidate[0].value
+
+
+def _size(candidate: _Candidate) -> float:
+    return abs(candidate[0].value)
+
+
 def _governing(
-    found: list[tuple[Part, MemberEnvelope]],
-    pick: Callable[[MemberEnvelope], list[Extreme]],
-    size: Callable[[float], float],
+    candidates: list[_Candidate],
+    choose: Callable[..., _Candidate],
+    measure: Callable[[_Candidate], float],
 ) -> Extreme:
-    best, owner = None, found[0][0]
-    for part, envelope in found:
-        for extreme in pick(envelope):
-            if best is None or size(extreme.value) > size(best.value):
-                best, owner = extreme, part
-    assert best is not None  # pick gives at least one
-    return Extreme(float(best.value), owner.position(float(best.x)), best.source)
+    """The first of the candidates that are equally large, at its place on the element."""
+    extreme, part = choose(candidates, key=measure)
+    if not part.member.element_offset and not part.member.reversed_:
+        return extreme
+    return Extreme(extreme.value, part.position(extreme.x), extreme.source)
 
 
-def _end_range(
-    found: list[tuple[Part, MemberEnvelope]], end: Part, *, at_start: bool
-) -> tuple[float, float]:
+def _end_range(found: list[_Found], end: Part, *, at_start: bool) -> tuple[float, float]:
     """Lowest and highest diagram moment at the element's start or end."""
+    own_start = end.member.reversed_ != at_start
     ranges = [
-        envelope.start_moment if part.member.reversed_ != at_start else envelope.end_moment
-        for part, envelope in found
-        if part is end
+        each.envelope.start_moment if own_start else each.envelope.end_moment
+        for each in found
+        if each.part is end
     ]
-    return min(float(r[0]) for r in ranges), max(float(r[1]) for r in ranges)
+    return min(r[0] for r in ranges), max(r[1] for r in ranges)
 
 
-_CURVES: tuple[tuple[str, str, str], ...] = (
-    ("MomentMax", STRENGTH, "moment_max"),
-    ("MomentMin", STRENGTH, "moment_min"),
-    ("ShearMax", STRENGTH, "shear_max_at"),
-    ("ShearMin", STRENGTH, "shear_min_at"),
-    ("DeflectionMax", SERVICEABILITY, "deflection_max"),
-    ("DeflectionMin", SERVICEABILITY, "deflection_min"),
-)
+_ALONG: dict[str, tuple[tuple[str, Callable[[MemberEnvelope], Floats]], ...]] = {
+    STRENGTH: (
+        ("MomentMax", lambda e: e.moment_max),
+        ("MomentMin", lambda e: e.moment_min),
+        ("ShearMax", lambda e: e.shear_max_at),
+        ("ShearMin", lambda e: e.shear_min_at),
+    ),
+    SERVICEABILITY: (
+        ("DeflectionMax", lambda e: e.deflection_max),
+        ("DeflectionMin", lambda e: e.deflection_min),
+    ),
+}
 
 
-def _curves(found: list[tuple[Part, str, MemberEnvelope]]) -> dict[str, Curve]:
+def _curves(found: list[_Found]) -> list[Curve]:
     """The diagrams along the element; where two lines share it, those with the larger moments."""
-    main = max(found, key=lambda f: max(f[2].sagging.value, -f[2].hogging.value))[0].result
-    curves: dict[str, Curve] = {}
-    for state in (STRENGTH, SERVICEABILITY):
-        parts = [(p, e) for p, s, e in found if s == state and p.result is main]
-        if not parts:
-            continue
-        positions = [_along(part, envelope.x) for part, envelope in parts]
-        positions = [
-            part.member.element_offset + (-x if part.member.reversed_ else x)
-            for (part, _), x in zip(parts, positions, strict=True)
-        ]
-        order = _increasing(positions)
-        for name, of_state, attribute in _CURVES:
-            if of_state == state:
-                values = [_along(part, getattr(e, attribute)) for part, e in parts]
-                curves[name] = _curve(order, values)
+    main = found[0].part.result
+    if any(each.part.result is not main for each in found):
+        sizes = [max(e.envelope.sagging.value, -e.envelope.hogging.value) for e in found]
+        main = found[sizes.index(max(sizes))].part.result
+    curves: list[Curve] = []
+    for state, readings in _ALONG.items():
+        parts = [each for each in found if each.state == state and each.part.result is main]
+        if parts:
+            positions = _chained([_places(each) for each in parts])
+            curves += [
+                Curve(
+                    name, positions, _chained([_along(each, read(each.envelope)) for each in parts])
+                )
+                for name, read in readings
+            ]
     return curves
 
 
-def _along(part: Part, values: Floats) -> Floats:
+def _places(each: _Found) -> Floats:
+    member = each.part.member
+    x = each.envelope.x
+    if member.reversed_:
+        return member.element_offset - x[::-1]
+    return x + member.element_offset if member.element_offset else x
+
+
+def _along(each: _Found, values: Floats) -> Floats:
     """Values in the direction of the element."""
-    return values[::-1] if part.member.reversed_ else values
+    return values[::-1] if each.part.member.reversed_ else values
 
 
-def _increasing(positions: list[Floats]) -> Floats:
-    """Strictly increasing positions: a repeated one moves on by STEP_WIDTH."""
-    x = positions[0] if len(positions) == 1 else np.concatenate(positions)
-    for i in np.flatnonzero(np.diff(x) < STEP_WIDTH) + 1:
-        if x.base is not None or not x.flags.writeable:
-            x = x.copy()
-        x[i] = x[i - 1] + STEP_WIDTH
-    return x
-
-
-def _curve(positions: Floats, values: list[Floats]) -> Curve:
-    return Curve(positions, values[0] if len(values) == 1 else np.concatenate(values))
+def _chained(pieces: list[Floats]) -> Floats:
+    return pieces[0] if len(pieces) == 1 else np.concatenate(pieces)

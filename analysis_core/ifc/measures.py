@@ -12,7 +12,8 @@ from typing import Any
 from analysis_core.ifc.append import Lines
 from analysis_core.ifc.extract import extract
 from analysis_core.ifc.file_units import FileUnits, read_units
-from analysis_core.ifc.step_index import StepIndex, reference
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_tokens import reference
 from analysis_core.ifc.step_values import real
 
 _UNITS_ATTRIBUTE = 8  # of IfcProject, in every schema

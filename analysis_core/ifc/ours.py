@@ -11,7 +11,8 @@ from dataclasses import dataclass, field
 
 from analysis_core.ifc.append import MODEL, RESULTS
 from analysis_core.ifc.property_sets import PREFIX
-from analysis_core.ifc.step_index import StepIndex, reference
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_tokens import reference
 from analysis_core.ifc.step_values import decoded
 
 RESULT_TYPE = "Spanledger_Result"
@@ -45,7 +46,7 @@ def find_ours(index: StepIndex) -> Ours:
 
 
 def _sort_in(ours: Ours, index: StepIndex, instance: int) -> None:
-    keyword = index.keyword(index.row(instance))
+    keyword = index.kind(instance)
     attributes = index.arguments(instance)
     if keyword == "IFCPROPERTYSET":
         name = _text(attributes, _NAME)
@@ -65,7 +66,7 @@ def related_elements(index: StepIndex, sets: dict[int, tuple[str, str]]) -> dict
     elements: dict[int, set[int]] = {number: set() for number in sets}
     for number, referrers in index.referrers(sets).items():
         for relation in referrers:
-            if index.keyword(index.row(relation)) == "IFCRELDEFINESBYPROPERTIES":
+            if index.kind(relation) == "IFCRELDEFINESBYPROPERTIES":
                 related = index.arguments(relation)[4]
                 found = map(reference, related) if isinstance(related, list) else ()
                 elements[number].update(n for n in found if n is not None)

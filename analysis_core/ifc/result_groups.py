@@ -29,7 +29,8 @@ from analysis_core.ifc.measures import Measures
 from analysis_core.ifc.ours import RESULT_TYPE
 from analysis_core.ifc.paths import Measures as ShapeMeasures
 from analysis_core.ifc.placements import Placements
-from analysis_core.ifc.step_index import StepIndex, reference
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_tokens import reference
 from analysis_core.ifc.step_values import decoded, label, real, references, string
 from analysis_core.ifc.unreadable import UnreadableShapeError
 from analysis_core.model import Case
@@ -158,7 +159,7 @@ class ResultGroups:
 
     def _of_class(self, elements: Mapping[str, int], keywords: frozenset[str]) -> set[str]:
         index = self._index
-        return {e for e, n in elements.items() if index.keyword(index.row(n)) in keywords}
+        return {e for e, n in elements.items() if index.kind(n) in keywords}
 
     def _entry(self, by_model: dict[int | None, Wanted], item: int) -> Wanted:
         model = next((m for m, members in self._models.items() if item in members), None)
@@ -365,7 +366,7 @@ class ResultGroups:
         return {e: found[placed[e]] if e in placed else _WORLD for e in entry.supports}
 
     def _is_load_group(self, number: int) -> bool:
-        return self._index.keyword(self._index.row(number)) in (
+        return self._index.kind(number) in (
             "IFCSTRUCTURALLOADCASE",
             "IFCSTRUCTURALLOADGROUP",
         )
@@ -385,7 +386,7 @@ def analysis_models(index: StepIndex) -> dict[int, set[int]]:
     for model, relations in index.referrers(models).items():
         for relation in relations:
             attributes = index.arguments(relation)
-            if index.keyword(index.row(relation)) == "IFCRELASSIGNSTOGROUP" and (
+            if index.kind(relation) == "IFCRELASSIGNSTOGROUP" and (
                 reference(attributes[6]) == model
             ):
                 related = attributes[4] if isinstance(attributes[4], list) else []

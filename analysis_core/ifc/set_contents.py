@@ -1,4 +1,4 @@
-"""What stood in our property sets before, to tell which of them posting changes.
+"""What stands in our property sets, to tell which of them posting changes.
 
 The time of posting does not count.
 """
@@ -6,29 +6,37 @@ The time of posting does not count.
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Mapping
 from functools import cached_property, partial
 
-from analysis_core.ifc.property_sets import PropertySet
-from analysis_core.ifc.step_index import StepIndex, arguments, reference
+from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step_tokens import arguments, reference
 
 _LINE = re.compile(r"#(\d+)=(.*);")
 _SET = re.compile(r"IFCPROPERTYSET\('([^']{22})'.*\(([#0-9,]+)\)\)")
 _REFERENCE = re.compile(r"'(?:[^']|'')*'|#(\d+)")
 _TIME_VALUE = re.compile(rb"'ComputedAt',\$,IFC[A-Z]+\('[^']*'\)")
-_TIME = "IFCPROPERTYSINGLEVALUE('ComputedAt'"
+_TIME = re.compile(r"IFCPROPERTYSINGLEVALUE\s*\(\s*'ComputedAt'")
 
-Bodies = Callable[[int], str]
+Texts = Callable[[int], str]
+# The texts of the properties of a set, and how to look up what these refer to.
+Content = tuple[list[str], Texts]
 
 
 class SetContents:
-    """Contents of property sets by GlobalId, looked at only where they are compared."""
+    """Contents of property sets by GlobalId, read only where they are compared."""
 
-    def __init__(self, load: Callable[[], dict[str, Callable[[], object]]] | None = None) -> None:
+    def __init__(
+        self,
+        load: Callable[[], Mapping[str, Callable[[], Content]]] | None = None,
+        *,
+        verbatim: bool = True,
+    ) -> None:
         self._load = load or dict
+        self._verbatim = verbatim
 
     @cached_property
-    def _sets(self) -> dict[str, Callable[[], object]]:
+    def _sets(self) -> Mapping[str, Callable[[], Content]]:
         return self._load()
 
     def __len__(self) -> int:
@@ -38,35 +46,36 @@ class SetContents:
         return global_id in self._sets
 
     def __or__(self, other: SetContents) -> SetContents:
-        return SetContents(lambda: self._sets | other._sets)
+        return SetContents(lambda: {**self._sets, **other._sets}, verbatim=False)
 
-    def equal(self, global_id: str, made: PropertySet, bodies: Bodies) -> bool:
-        """Whether a set had just these properties; ``bodies`` gives the text of what they name."""
-        before = self._sets[global_id]()
-        read = _plain if isinstance(before, tuple) else _values
-        return before == read(made.properties, bodies)
+    def changed(self, after: SetContents, global_ids: Iterable[str]) -> int:
+        """Return how many of these sets differ from what they are now."""
+        # Other programs print numbers in other ways, and order a set as they like.
+        read = _texts if self._verbatim and after._verbatim else _values
+        return sum(read(*self._sets[g]()) != read(*after._sets[g]()) for g in global_ids)
 
 
 def contents_in_block(block: bytes) -> SetContents:
     """Return the sets of our own block, in which every instance is one line."""
 
-    def load() -> dict[str, Callable[[], object]]:
+    def load() -> Mapping[str, Callable[[], Content]]:
         lines = map(_LINE.fullmatch, block.decode("ascii", "replace").splitlines())
-        bodies = {int(line[1]): line[2] for line in lines if line}
-        sets: dict[str, Callable[[], object]] = {}
-        for body in bodies.values():
-            if match := _SET.fullmatch(body):
+        texts = {int(line[1]): line[2] for line in lines if line}
+        sets: dict[str, Callable[[], Content]] = {}
+        for text in texts.values():
+            if match := _SET.fullmatch(text):
                 numbers = [int(n[1:]) for n in match[2].split(",")]
-                sets[match[1]] = partial(_in_block, numbers, bodies)
+                sets[match[1]] = partial(_in_block, numbers, texts)
         return sets
 
     return SetContents(load)
 
 
-def contents_in_file(index: StepIndex, sets: dict[int, tuple[str, str]]) -> SetContents:
+def contents_in_file(index: StepIndex, sets: Mapping[int, tuple[str, str]]) -> SetContents:
     """Return sets (GlobalId and name by number) of a file that any program may have written."""
     return SetContents(
-        lambda: {name: partial(_in_file, index, number) for number, (name, _) in sets.items()}
+        lambda: {name: partial(_in_file, index, number) for number, (name, _) in sets.items()},
+        verbatim=False,
     )
 
 
@@ -75,49 +84,48 @@ def timeless(block: bytes) -> bytes:
     return _TIME_VALUE.sub(b"", block)
 
 
-def _in_block(numbers: list[int], bodies: dict[int, str]) -> object:
-    return _plain([bodies[n] for n in numbers], bodies.__getitem__)
+def _in_block(numbers: list[int], texts: Mapping[int, str]) -> Content:
+    return [texts[n] for n in numbers], texts.__getitem__
 
 
-def _in_file(index: StepIndex, number: int) -> object:
-    def body(instance: int) -> str:
-        text = index.text(instance)
-        return text[text.index("=") + 1 :].strip().rstrip(";")
+def _in_file(index: StepIndex, number: int) -> Content:
+    def text(instance: int) -> str:
+        whole = index.text(instance)
+        return whole[whole.index("=") + 1 :].strip().rstrip(";")
 
     properties = index.arguments(number)[4]
     numbers = map(reference, properties) if isinstance(properties, list) else ()
-    return _values([body(n) for n in numbers if n is not None and n in index], body)
+    return [text(n) for n in numbers if n is not None and n in index], text
 
 
-def _plain(properties: Sequence[str], bodies: Bodies) -> object:
+def _texts(properties: list[str], texts: Texts) -> object:
     """The texts, with the texts of units in the place of their numbers."""
-    return tuple(_expanded(p, bodies) for p in properties if not p.startswith(_TIME))
+    return [_expanded(p, texts) for p in properties if not _TIME.match(p)]
 
 
-def _expanded(text: str, bodies: Bodies) -> str:
+def _expanded(text: str, texts: Texts) -> str:
     if "#" not in text:
         return text
-    return _REFERENCE.sub(lambda m: _expanded(bodies(int(m[1])), bodies) if m[1] else m[0], text)
+    return _REFERENCE.sub(lambda m: _expanded(texts(int(m[1])), texts) if m[1] else m[0], text)
 
 
-def _values(properties: Sequence[str], bodies: Bodies) -> object:
-    """The values: other programs print numbers in other ways, and order a set as they like."""
-    return frozenset(_value(p, bodies) for p in properties if not p.startswith(_TIME))
+def _values(properties: list[str], texts: Texts) -> object:
+    return frozenset(_value(p, texts) for p in properties if not _TIME.match(p))
 
 
-def _value(text: str, bodies: Bodies) -> object:
-    return (text[: text.index("(")].strip().upper(), _tokens(arguments(text), bodies))
+def _value(text: str, texts: Texts) -> object:
+    return text[: text.index("(")].strip().upper(), _tokens(arguments(text), texts)
 
 
-def _tokens(tokens: list[object], bodies: Bodies) -> tuple[object, ...]:
-    return tuple(_token(token, bodies) for token in tokens)
+def _tokens(tokens: list[object], texts: Texts) -> tuple[object, ...]:
+    return tuple(_token(token, texts) for token in tokens)
 
 
-def _token(token: object, bodies: Bodies) -> object:
+def _token(token: object, texts: Texts) -> object:
     if isinstance(token, list):
-        return _tokens(token, bodies)
+        return _tokens(token, texts)
     if (number := reference(token)) is not None:
-        return _value(bodies(number), bodies)
+        return _value(texts(number), texts)
     try:
         return float(str(token))
     except ValueError:

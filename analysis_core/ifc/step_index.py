@@ -1,80 +1,62 @@
-"""Where things stand in the bytes of a STEP file: instances, sections, references.
+"""What posting has to know of the bytes of a STEP file: its instances, sections and numbers.
 
-Posting leaves every byte of a model where it was, so it works on the bytes.  Strings and comments
-are blanked first (``step_blank``), then arrays of positions answer what a reading character by
-character would answer in more time than opening the model takes.
+Posting leaves every byte of a model where it was, so it works on the bytes.  Usually it looks for
+few things in a large file, and a search for them is quick; whether a place lies within a string
+is told by the number of quotes before it (a doubled quote counts twice and changes nothing).
+What needs every instance and reference of the file builds ``StepArrays``.
 """
 
 from __future__ import annotations
 
 import re
-from collections.abc import Callable, Iterable
+from collections.abc import Iterable
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.ifc.step_blank import blank
+from analysis_core.ifc.step_arrays import Positions, StepArrays
+from analysis_core.ifc.step_blank import Blanked, blank
+from analysis_core.ifc.step_tokens import arguments
 from analysis_core.ifc.step_values import decoded
 
-Positions = NDArray[np.int64]
-Bytes = NDArray[np.uint8]
-
 _HEAD = re.compile(rb"#\s*(\d+)\s*=\s*([A-Za-z0-9_]*)\s*\(")
-_REFERENCE = re.compile(r"'(?:[^']|'')*'|#(\d+)")
-_TOKEN = re.compile(r"\s*('(?:[^']|'')*'|[(),]|[^\s(),']+)")
 _DATA = re.compile(rb"\bDATA\s*[;(]")
 _SCHEMA = re.compile(rb"FILE_SCHEMA\s*\(\s*\(\s*'([^']*)'")
+_STRING = re.compile(r"\s*('(?:[^']|'')*')")
+_REFERENCE = re.compile(r"'(?:[^']|'')*'|#\s*(\d+)")
+_GLOBAL_ID = re.compile(r"[0-9A-Za-z_$]{22}")
 
 
 class StepIndex:
-    """Positions in ``data``, the bytes of one STEP file.
+    """Finds things in ``data``, the bytes of one STEP file.
 
-    ``ids``, ``starts``, ``equals`` and ``ends`` are arrays over its instances in the order of
-    the file: number, position of the #, of the =, and just after the semicolon.  ``code`` is the
-    file with blanked strings and comments, ``stray`` says that a comment is opened and never
-    closed.
+    ``comments`` are their spans, ``content`` is the file with blanked comments.  ``stray`` says
+    that a comment is opened and never closed, ``open_string`` that a string is.
     """
 
     def __init__(self, data: bytes) -> None:
-        blanked = blank(data)
         self.data = data
-        self.code = blanked.text
-        self.comments = blanked.comments
-        self.stray = bool(blanked.stray)
-        self.open_string = blanked.open >= 0
-        self._buffer: Bytes = np.frombuffer(self.code, dtype=np.uint8)
-        hashes = np.flatnonzero(self._buffer == ord("#"))
-        numbers, after = _numbers(self._buffer, hashes)
-        named = numbers >= 0
-        hashes, numbers, after = hashes[named], numbers[named], after[named]
-        defining = self._buffer[np.minimum(after, self._buffer.size - 1)] == ord("=")
-        semicolons = np.flatnonzero(self._buffer == ord(";"))
-        at = np.searchsorted(semicolons, after[defining])
-        whole = at < semicolons.size
-        self.ids: Positions = numbers[defining][whole]
-        self.starts: Positions = hashes[defining][whole]
-        self.equals: Positions = after[defining][whole]
-        self.ends: Positions = semicolons[at[whole]] + 1
-        self._mentions = hashes[~defining], numbers[~defining]
+        self.content = data
+        self.comments: tuple[tuple[int, int], ...] = ()
+        self.stray = False
+        self._kinds: dict[int, str] = {}
+        # A shifted apostrophe stands alone in a string; quotes cannot be counted then.
+        self._countable = b"\\S\\'" not in data
+        if b"/*" in data or not self._countable:
+            blanked = self._blanked
+            self.comments, self.stray = blanked.comments, bool(blanked.stray)
+            self.content = _without(data, (*blanked.comments, *blanked.stray))
+            self.open_string = blanked.open >= 0
+        else:
+            self.open_string = data.count(b"'") % 2 == 1
 
-    @property
-    def largest_id(self) -> int:
-        """Largest number given to an instance or referred to, 0 where there is none.
-
-        Some files refer to instances that they do not hold; these numbers stay free.
-        """
-        return max(int(self.ids.max(initial=0)), int(self._mentions[1].max(initial=0)))
-
-    @property
-    def numbers(self) -> set[int]:
-        """All numbers given to instances or referred to."""
-        return {*self.ids.tolist(), *self._mentions[1].tolist()}
+    # -- the file as a whole -----------------------------------------------------------------
 
     @cached_property
     def end_of_file(self) -> int | None:
         """Position of END-ISO-10303-21; None where there is none."""
-        return _last(self.code, rb"END-ISO-10303-21\s*;", len(self.code))
+        return self._last(rb"END-ISO-10303-21\s*;", len(self.content))
 
     @cached_property
     def data_end(self) -> int | None:
@@ -85,24 +67,24 @@ class StepIndex:
         """
         if self.end_of_file is None:
             return None
-        section = _last(self.code, rb"ENDSEC\s*;", self.end_of_file)
-        if section is None or _DATA.search(self.code, 0, section) is None:
+        section = self._last(rb"ENDSEC\s*;", self.end_of_file)
+        if section is None:
             return None
-        return section
+        found = (m.start() for m in _DATA.finditer(self.content, 0, section))
+        return section if any(self._outside(at) for at in found) else None
 
     @property
     def signed(self) -> bool:
         """Whether a signature section follows the data (ISO 10303-21:2016, clause 14)."""
-        return self.end_of_file is not None and b"SIGNATURE" in self.code[self.end_of_file :]
+        return self.end_of_file is not None and b"SIGNATURE" in self.content[self.end_of_file :]
 
-    @property
+    @cached_property
     def schema(self) -> str:
-        """The schema in the header as ifcopenshell's families go: IFC2X3, IFC4, IFC4X3."""
+        """The schema family in the header: IFC2X3, IFC4 or IFC4X3."""
         match = _SCHEMA.search(self.content)
         name = match[1].decode("latin-1").upper() if match else ""
-        if name.startswith("IFC4X3"):
-            return "IFC4X3"
-        return "IFC2X3" if name.startswith("IFC2X") else "IFC4" if name.startswith("IFC4") else name
+        families = (("IFC4X3", "IFC4X3"), ("IFC4", "IFC4"), ("IFC2X", "IFC2X3"))
+        return next((family for start, family in families if name.startswith(start)), name)
 
     @property
     def newline(self) -> bytes:
@@ -113,203 +95,228 @@ class StepIndex:
         return b"\r" if b"\r" in head and b"\n" not in head else b"\n"
 
     @cached_property
-    def content(self) -> bytes:
-        """The file with blanked comments, strings as they are."""
-        if not self.comments:
-            return self.data
-        content = bytearray(self.data)
-        for start, end in self.comments:
-            content[start:end] = b" " * (end - start)
-        return bytes(content)
+    def largest_number(self) -> int:
+        """A number that no instance and no reference of the file exceeds.
+
+        Some files refer to instances that they do not hold; these numbers stay free.
+        """
+        quick = _largest_after_hash(self.content)
+        return self.arrays.largest if quick is None else quick
+
+    @property
+    def numbers(self) -> set[int]:
+        """All numbers given to instances or referred to."""
+        return {*self.arrays.ids.tolist(), *self.arrays.mentioned.tolist()}
 
     @cached_property
-    def _rows(self) -> dict[int, int]:
-        return dict(zip(self.ids.tolist(), range(self.ids.size), strict=True))
+    def arrays(self) -> StepArrays:
+        """All instances and references."""
+        return StepArrays(self._blanked.text)
 
-    def row(self, instance: int) -> int:
-        """Return the place of an instance in the arrays; KeyError where there is none."""
-        return self._rows[instance]
+    # -- one instance ------------------------------------------------------------------------
 
     def __contains__(self, instance: int) -> bool:
-        return instance in self._rows
+        return self._span(instance) is not None
+
+    def span(self, instance: int) -> tuple[int, int]:
+        """Return from where to where an instance stands; KeyError where there is none."""
+        found = self._span(instance)
+        if found is None:
+            raise KeyError(instance)
+        return found
 
     def text(self, instance: int) -> str:
         """Return an instance as it stands in the file, without comments."""
-        row = self.row(instance)
-        return self.content[self.starts[row] : self.ends[row]].decode("utf-8", "surrogateescape")
+        start, end = self.span(instance)
+        return self.content[start:end].decode("utf-8", "surrogateescape")
 
-    def keyword(self, row: int) -> str:
-        """Return the class of the instance in a row in capitals, "" where it has none."""
-        match = _HEAD.match(self.code, int(self.starts[row]))
-        return match[2].decode().upper() if match else ""
+    def kind(self, instance: int) -> str:
+        """Return the class of an instance in capitals, "" where it has none."""
+        if instance not in self._kinds:
+            match = _HEAD.match(self.content, self.span(instance)[0])
+            self._kinds[instance] = match[2].decode().upper() if match else ""
+        return self._kinds[instance]
 
     def arguments(self, instance: int) -> list[object]:
         """Return the attributes of an instance: text for tokens, lists for aggregates."""
         return arguments(self.text(instance))
 
+    def references(self, instance: int) -> list[int]:
+        """Return the numbers that an instance refers to."""
+        text = self.text(instance)
+        return [int(n) for n in _REFERENCE.findall(text[text.index("=") :]) if n]
+
+    # -- many instances ----------------------------------------------------------------------
+
     def instances_of(self, keyword: str) -> list[int]:
         """Return the numbers of all instances of exactly this class, in the order of the file."""
-        rows = (self._row_of_keyword(at) for at in self._places(keyword))
-        return [int(self.ids[row]) for row in rows if row is not None]
+        capitals = re.compile(keyword.encode() + rb"\s*\(")
+        places = [m.start() for m in capitals.finditer(self.content)]
+        if not places and b"IFCPROJECT" not in self.content:  # not in capitals, as it should be
+            any_case = re.compile(capitals.pattern, re.IGNORECASE)
+            places = [m.start() for m in any_case.finditer(self.content)]
+        found = []
+        for at in places:
+            head = self._head_before(at, keyword.encode())
+            if head is not None and self._outside(at):
+                found.append(head)
+        return found
 
     def instance_at(self, position: int) -> int | None:
         """Return the number of the instance that covers a position, None where none does."""
-        row = int(np.searchsorted(self.starts, position, side="right")) - 1
-        return int(self.ids[row]) if row >= 0 and position < self.ends[row] else None
+        row = self.arrays.row_at(position)
+        return None if row is None else int(self.arrays.ids[row])
+
+    def referrers(self, wanted: Iterable[int]) -> dict[int, set[int]]:
+        """Return, for each wanted number, the numbers of the instances that refer to it."""
+        wanted = list(wanted)
+        return self.arrays.referrers(wanted) if wanted else {}
 
     def rooted(self, wanted: Iterable[str]) -> dict[str, list[int]]:
         """Return the numbers of the instances that begin with each wanted GlobalId."""
         names = set(wanted)
-        quotes = np.flatnonzero(self._buffer == ord("'"))
-        first = np.searchsorted(quotes, self.equals)
-        rows = np.flatnonzero(first + 1 < quotes.size)
-        first = first[rows]
-        opening = quotes[first]
-        fits = (quotes[first + 1] == opening + 23) & (opening < self.ends[rows])
-        rows, opening = rows[fits], opening[fits]
-        raw = np.frombuffer(self.data, dtype=np.uint8)
-        text = raw[opening[:, None] + np.arange(1, 23)].tobytes().decode("latin-1")
         found: dict[str, list[int]] = {}
-        for k, row in enumerate(rows.tolist()):
-            name = text[22 * k : 22 * k + 22]
-            if name in names and self._begins_at(row, int(opening[k])):
-                found.setdefault(name, []).append(int(self.ids[row]))
-        odd = {name for name in names if not _usual(name)}
-        return found | (self._rooted_oddly(odd) if odd else {})
+        places = _first_strings(self.content, names)
+        inside = np.searchsorted(self._quotes, [at for at, _ in places]) % 2
+        for (at, name), hidden in zip(places, inside.tolist(), strict=True):
+            head = None if hidden else self._head_before(at)
+            if head is not None:
+                found.setdefault(name, []).append(head)
+        missing = names - found.keys()
+        return found | (self._rooted_oddly(missing) if missing else {})
 
-    def references(self, instance: int) -> list[int]:
-        """Return the numbers that an instance refers to."""
-        row = self.row(instance)
-        code = self.code[int(self.equals[row]) + 1 : int(self.ends[row])]
-        return [int(n) for n in re.findall(rb"#\s*(\d+)", code)]
+    # -- how it is done ----------------------------------------------------------------------
 
     @cached_property
-    def _links(self) -> tuple[Positions, Positions]:
-        """Of every reference in an instance: the number referred to, and the one that refers."""
-        places, numbers = self._mentions
-        rows = np.searchsorted(self.equals, places) - 1
-        inside = (rows >= 0) & (places < self.ends[rows])
-        return numbers[inside], self.ids[rows[inside]]
+    def _blanked(self) -> Blanked:
+        return blank(self.data)
 
-    def referrers(self, wanted: Iterable[int]) -> dict[int, set[int]]:
-        """Return, for each wanted number, the numbers of the instances that refer to it."""
-        numbers, referrers = self._links
-        hit = np.isin(numbers, np.array(sorted(wanted), dtype=np.int64))
-        result: dict[int, set[int]] = {}
-        for number, referrer in zip(numbers[hit].tolist(), referrers[hit].tolist(), strict=True):
-            if referrer != number:
-                result.setdefault(number, set()).add(referrer)
-        return result
+    @cached_property
+    def _quotes(self) -> Positions:
+        text = self.content if self._countable else self._blanked.text
+        return np.flatnonzero(np.frombuffer(text, dtype=np.uint8) == ord("'"))
 
-    def _places(self, keyword: str) -> Iterable[int]:
-        """Places of a keyword: capitals, as the standard asks, else whatever case there is."""
-        capitals = re.compile(keyword.encode() + rb"\s*\(")
-        found = [m.start() for m in capitals.finditer(self.code)]
-        if not found and b"IFCPROJECT" not in self.code:
-            any_case = re.compile(capitals.pattern, re.IGNORECASE)
-            found = [m.start() for m in any_case.finditer(self.code)]
-        return found
+    def _outside(self, position: int) -> bool:
+        """Whether a place is not within a string."""
+        return int(np.searchsorted(self._quotes, position)) % 2 == 0
 
-    def _row_of_keyword(self, at: int) -> int | None:
-        row = int(np.searchsorted(self.equals, at)) - 1
-        if row < 0 or self.code[self.equals[row] + 1 : at].strip():
+    def _last(self, pattern: bytes, end: int) -> int | None:
+        """Return the last place before ``end`` where code, not a string, fits."""
+        regex = re.compile(pattern)
+        high = end
+        while high > 0:
+            low = max(0, high - 65536)
+            # A match may begin just below ``high`` and run past it.
+            places = [m.start() for m in regex.finditer(self.content, low, min(end, high + 256))]
+            for at in reversed(places):
+                if self._outside(at):
+                    return at
+            high = low
+        return None
+
+    def _span(self, instance: int) -> tuple[int, int] | None:
+        if "arrays" not in self.__dict__:
+            start = self._quick_start(instance)
+            if start is not None:
+                return start, self._end_after(start)
+        row = self.arrays.rows.get(instance)
+        if row is None:
             return None
-        return row
+        return int(self.arrays.starts[row]), int(self.arrays.ends[row])
 
-    def _begins_at(self, row: int, quote: int) -> bool:
-        match = _HEAD.match(self.code, int(self.starts[row]))
-        return match is not None and not self.code[match.end() : quote].strip()
+    def _quick_start(self, instance: int) -> int | None:
+        needle = b"#%d=" % instance
+        at = self.content.find(needle)
+        while at >= 0 and not self._outside(at):
+            at = self.content.find(needle, at + 1)
+        return at if at >= 0 else None
+
+    def _end_after(self, start: int) -> int:
+        end = self.content.find(b";", start)
+        while end >= 0 and not self._outside(end):
+            end = self.content.find(b";", end + 1)
+        return len(self.content) if end < 0 else end + 1
+
+    def _head_before(self, at: int, keyword: bytes | None = None) -> int | None:
+        """Return the number of the instance whose first bracket or keyword stands ``at``."""
+        start = self.content.rfind(b"#", 0, at)
+        match = _HEAD.match(self.content, start) if start >= 0 else None
+        if match is None:
+            return None
+        if keyword is None and match.end() != at + 1:
+            return None
+        if keyword is not None and (match.start(2) != at or match[2].upper() != keyword):
+            return None
+        number = int(match[1])
+        self._kinds[number] = match[2].decode().upper()
+        return number
 
     def _rooted_oddly(self, names: set[str]) -> dict[str, list[int]]:
-        """The same for GlobalIds that are not as they should be: read every first string."""
+        """The same for whatever a quick search does not find: read every first string."""
         found: dict[str, list[int]] = {}
-        for row in range(self.ids.size):
-            match = _HEAD.match(self.code, int(self.starts[row]))
+        for start, end, number in zip(
+            self.arrays.starts.tolist(), self.arrays.ends.tolist(), self.arrays.ids.tolist(),
+            strict=True,
+        ):  # fmt: skip
+            match = _HEAD.match(self.content, start)
             if match is None:
                 continue
-            text = self.content[match.end() : self.ends[row]].decode("utf-8", "replace")
-            token = _TOKEN.match(text)
-            if token and token[1].startswith("'") and (name := decoded(token[1])) in names:
-                found.setdefault(name, []).append(int(self.ids[row]))
+            token = _STRING.match(self.content[match.end() : end].decode("utf-8", "replace"))
+            if token and (name := decoded(token[1])) in names:
+                found.setdefault(name, []).append(number)
         return found
 
 
-def arguments(text: str) -> list[object]:
-    """Return the attributes of an instance given as text, or of a bare list in brackets.
+def _without(data: bytes, spans: Iterable[tuple[int, int]]) -> bytes:
+    content = bytearray(data)
+    for start, end in spans:
+        content[start:end] = b" " * (end - start)
+    return bytes(content)
 
-    Tokens are text, aggregates are lists; a typed value gives two items, its type and a list.
+
+def _first_strings(content: bytes, names: set[str]) -> list[tuple[int, str]]:
+    """Return where a bracket opens before one of these GlobalIds in quotes, and which it is."""
+    if len(content) < 26:
+        return []
+    buffer = np.frombuffer(content, dtype=np.uint8)
+    quoted = (buffer[:-24] == ord("(")) & (buffer[1:-23] == ord("'")) & (buffer[24:] == ord("'"))
+    places = np.flatnonzero(quoted)
+    # Each 22 bytes of the file, wherever they begin, as one item.
+    words: NDArray[np.bytes_] = np.ndarray(
+        (len(content) - 21,), dtype="S22", buffer=content, strides=(1,)
+    )
+    wanted = {name.encode(): name for name in names if _GLOBAL_ID.fullmatch(name)}
+    found = zip(places.tolist(), words[places + 2].tolist(), strict=True)
+    return [(at, wanted[word]) for at, word in found if word in wanted]
+
+
+def _largest_after_hash(content: bytes) -> int | None:
+    """Return the largest number of at most eight digits after a #, None where one is longer.
+
+    Strings are not left out: a number too large does no harm.  Eight bytes after each # are
+    looked at as one integer; the lowest bit set in ``other`` marks the first that is no digit.
     """
-    opening = text.index("(")
-    stack: list[list[object]] = [[]]
-    for match in _TOKEN.finditer(text, opening):
-        token = match[1]
-        if token == "(":
-            stack.append([])
-        elif token == ")":
-            inner = stack.pop()
-            stack[-1].append(inner)
-            if len(stack) == 1:
-                break
-        elif token != ",":
-            stack[-1].append(token)
-    result = stack[0][0]
-    return result if isinstance(result, list) else []
-
-
-def reference(token: object) -> int | None:
-    """Return the number in a reference such as #12, None for anything else."""
-    if isinstance(token, str) and token.startswith("#") and token[1:].isdigit():
-        return int(token[1:])
-    return None
-
-
-def renumbered(text: str, number: Callable[[int], int]) -> str:
-    """Return a text with every reference replaced, strings left alone."""
-    return _REFERENCE.sub(lambda m: f"#{number(int(m[1]))}" if m[1] else m[0], text)
-
-
-def _usual(name: str) -> bool:
-    return len(name) == 22 and name.isascii() and "'" not in name and "\\" not in name
-
-
-def _last(code: bytes, pattern: bytes, end: int) -> int | None:
-    """Return the last place before ``end`` that fits, looking from the back in steps."""
-    regex = re.compile(pattern)
-    high = end
-    while high > 0:
-        low = max(0, high - 65536)
-        # A match may begin just below ``high`` and run past it.
-        places = [m.start() for m in regex.finditer(code, low, min(end, high + 256))]
-        if places:
-            return places[-1]
-        high = low
-    return None
-
-
-def _numbers(buffer: Bytes, hashes: Positions) -> tuple[Positions, Positions]:
-    """Return the number after each #, -1 where there is none, and where the next token begins."""
-    numbers = np.zeros(hashes.size, dtype=np.int64)
-    at = _skip_blanks(buffer, hashes + 1)
-    first = at.copy()
-    moving = np.flatnonzero(at < buffer.size)
-    while moving.size:
-        values = buffer[at[moving]]
-        digit = (values >= ord("0")) & (values <= ord("9"))
-        moving = moving[digit]
-        numbers[moving] = numbers[moving] * 10 + (values[digit] - np.uint8(ord("0")))
-        at[moving] += 1
-        moving = moving[at[moving] < buffer.size]
-    numbers[at == first] = -1
-    return numbers, _skip_blanks(buffer, at)
-
-
-def _skip_blanks(buffer: Bytes, at: Positions) -> Positions:
-    """Move each position on to the next byte that is not blank."""
-    at = at.copy()
-    moving = np.flatnonzero(at < buffer.size)
-    while moving.size:
-        values = buffer[at[moving]]
-        moving = moving[(values == 32) | ((values >= 9) & (values <= 13))]
-        at[moving] += 1
-        moving = moving[at[moving] < buffer.size]
-    return at
+    if len(content) < 16:
+        return None
+    hashes = np.flatnonzero(np.frombuffer(content, dtype=np.uint8) == ord("#"))
+    hashes = hashes[hashes < len(content) - 9]
+    if not hashes.size:
+        return None
+    words: NDArray[np.uint64] = np.ndarray(
+        (len(content) - 7,), dtype="<u8", buffer=content, strides=(1,)
+    )
+    word = words[hashes + 1]
+    digits = word ^ np.uint64(0x3030303030303030)  # a digit becomes 0 to 9
+    high = (digits + np.uint64(0x7676767676767676)) | digits
+    other = high & np.uint64(0x8080808080808080)
+    first = other & (~other + np.uint64(1))
+    if not first.all():
+        return None  # eight digits or more
+    longest = int(first.max())
+    if longest == 0x80:
+        return None  # a blank after every #
+    if (first == 0x80).any() and (word[first == 0x80] & np.uint64(0xFF) <= 32).any():
+        return None  # a blank after some #
+    count = longest.bit_length() // 8 - 1
+    texts = word[first == np.uint64(longest)].byteswap()
+    return int(int(texts.max()).to_bytes(8, "big")[:count])

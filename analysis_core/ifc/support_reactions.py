@@ -6,10 +6,8 @@ import math
 from dataclasses import dataclass, field
 
 from analysis_core.ifc.governing import STRENGTH
-from analysis_core.ifc.measures import Measure
-from analysis_core.ifc.property_sets import REACTIONS, PropertySet, SetMaker
+from analysis_core.ifc.property_sets import REACTIONS, SetWriter
 from analysis_core.ifc.step_values import LABEL_LENGTH
-from analysis_core.model import Joint
 from analysis_core.results import LineResult, Outcome, ReactionEnvelope
 
 Bounds = tuple[float, float]
@@ -57,39 +55,37 @@ def support_reactions(outcome: Outcome) -> dict[str, SupportReactions]:
     for result in outcome.lines:
         if result.status != "balanced":
             continue
-        envelopes = _envelopes(result)
+        envelope = result.envelopes.get(STRENGTH)
+        by_joint = {r.joint: r for r in envelope.reactions} if envelope is not None else {}
         for joint in result.line.joints:
             if joint.support is not None and joint.element:
-                entry = found.setdefault(joint.element, SupportReactions(joint.element))
-                _add(entry, result, joint, envelopes.get(joint.id))
+                entry = found.get(joint.element)
+                if entry is None:
+                    entry = found[joint.element] = SupportReactions(joint.element)
+                _add(entry, result, joint.id, by_joint.get(joint.id))
     return found
 
 
-def reaction_set(found: SupportReactions, maker: SetMaker) -> PropertySet | None:
-    """Return Spanledger_Reactions, None where nothing is known.
+def write_reactions(found: SupportReactions, sets: SetWriter) -> None:
+    """Write Spanledger_Reactions, if anything is known.
 
     ``Vertical`` bounds the sum of all lines.  ``Horizontal`` and ``Moment`` are there where the
     support gives such a reaction at all.
     """
-    m = maker.measures
-    properties = []
+    m = sets.measures
+    numbers = []
     for component in _COMPONENTS:
         bounds = found.total(component)
         if bounds is not None and (component == "Vertical" or any(bounds)):
             measure = m.torque if component == "Moment" else m.force
-            properties.append(maker.bounded(component, bounds, measure))
-    properties += _case_properties(found, maker, m.force)
-    return PropertySet(found.element, REACTIONS, tuple(properties)) if properties else None
-
-
-def _case_properties(found: SupportReactions, maker: SetMaker, measure: Measure) -> list[str]:
+            numbers.append(sets.bounded(component, bounds, measure))
     taken: set[str] = set(_COMPONENTS)
-    properties = []
     for (mark, case), value in found.cases.items():
         name = _distinct(f"{mark} / {case}", taken)
         taken.add(name)
-        properties.append(maker.single(name, value, measure))
-    return properties
+        numbers.append(sets.single(name, value, m.force))
+    if numbers:
+        sets.add(found.element, REACTIONS, numbers)
 
 
 def _distinct(name: str, taken: set[str]) -> str:
@@ -102,15 +98,10 @@ def _distinct(name: str, taken: set[str]) -> str:
     return short
 
 
-def _envelopes(result: LineResult) -> dict[int, ReactionEnvelope]:
-    envelope = result.envelopes.get(STRENGTH)
-    return {r.joint: r for r in envelope.reactions} if envelope is not None else {}
-
-
 def _add(
     entry: SupportReactions,
     result: LineResult,
-    joint: Joint,
+    joint: int,
     envelope: ReactionEnvelope | None,
 ) -> None:
     mark = result.line.mark
@@ -122,9 +113,9 @@ def _add(
         ):
             by_line = entry.bounds.setdefault(component, {})
             before = by_line.get(mark, (0.0, 0.0))
-            by_line[mark] = (before[0] + float(low.value), before[1] + float(high.value))
+            by_line[mark] = before[0] + float(low.value), before[1] + float(high.value)
     if result.solution is not None:
-        for number, case in enumerate(result.solution.cases):
-            vertical = float(result.solution.reactions[number, joint.id, 1])
-            key = (mark, case)
-            entry.cases[key] = entry.cases.get(key, 0.0) + vertical
+        vertical = result.solution.reactions[:, joint, 1].tolist()
+        for case, value in zip(result.solution.cases, vertical, strict=True):
+            key = mark, case
+            entry.cases[key] = entry.cases.get(key, 0.0) + value

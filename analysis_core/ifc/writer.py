@@ -9,8 +9,8 @@ has rewritten the file.
 from __future__ import annotations
 
 import os
-from collections.abc import Callable, Collection
-from dataclasses import dataclass, replace
+from collections.abc import Callable, Collection, Sequence
+from dataclasses import dataclass
 from datetime import UTC, datetime
 from pathlib import Path
 from typing import Literal
@@ -19,16 +19,19 @@ from analysis_core.errors import IfcReadError, IfcWriteError
 from analysis_core.findings import Finding
 from analysis_core.ifc import append, atomic, clearing
 from analysis_core.ifc.container import Container, read_container
-from analysis_core.ifc.governing import Part, element_effects, element_parts
-from analysis_core.ifc.measures import Measures, measures
+from analysis_core.ifc.diagrams import DiagramWriter
+from analysis_core.ifc.find_elements import find_elements
+from analysis_core.ifc.governing import ElementEffects, Part, element_effects, element_parts
+from analysis_core.ifc.measures import measures
 from analysis_core.ifc.owner import owner_history
 from analysis_core.ifc.property_sets import (
     DIAGRAMS,
     EFFECTS,
     REACTIONS,
     RECORD,
-    PropertySet,
-    SetMaker,
+    EffectsWriter,
+    RecordWriter,
+    SetWriter,
 )
 from analysis_core.ifc.result_groups import (
     CaseStations,
@@ -36,15 +39,13 @@ from analysis_core.ifc.result_groups import (
     reaction_id,
     rewritten_ids,
 )
-from analysis_core.ifc.set_contents import timeless
-from analysis_core.ifc.set_lines import find_elements, write_sets
+from analysis_core.ifc.set_contents import contents_in_block, timeless
 from analysis_core.ifc.step_index import StepIndex
-from analysis_core.ifc.support_reactions import (
-    SupportReactions,
-    reaction_set,
-    support_reactions,
-)
+from analysis_core.ifc.support_reactions import support_reactions, write_reactions
 from analysis_core.results import Outcome
+
+_BATCH = 512
+"""Elements whose diagrams are printed together."""
 
 Progress = Callable[[str, float], None]
 
@@ -163,21 +164,16 @@ class _Job:
         elements, findings = find_elements({**self._parts, **self._supports}, index)
         self._findings += findings
         self._tell("Posting", 0.4)
-        lines = append.Lines(append.first_free(index, cleared.kept))
-        owner = owner_history(index, lines)
-        units = measures(index, lines)
-        sets = self._sets(index, units, elements)
-        set_ids = write_sets(sets, elements, lines, owner)
-        self._tell("Posting", 0.7)
+        lines = append.Lines(append.first_free(index, cleared.kept), index.newline)
+        owner, units = owner_history(index, lines), measures(index, lines)
+        sets = SetWriter(lines, elements, schema=index.schema, owner=owner, measures=units)
+        self._write_sets(sets, elements, index.schema)
+        self._tell("Posting", 0.8)
         groups = ResultGroups(index, lines, owner, units, self._stations, cleared.retained)
         count = groups.write(self._outcome, self._supports, self._parts, elements)
-        self._tell("Posting", 0.8)
-        assert index.data_end is not None  # _check has seen to it
-        text = cleared.kept + lines.text(index.newline)
-        parts: list[bytes | memoryview] = [index.data]
-        if text:
-            parts = append.with_block(index, text, append.RESULTS)
-        return parts, replace(self._report(cleared, lines, text, sets, set_ids), groups=count)
+        new = [cleared.kept, *lines.chunks()]
+        report = self._report(cleared, new, sets.written, count)
+        return append.with_block(index, new, append.RESULTS), report
 
     def _restrict(self, only: frozenset[str]) -> None:
         """Keep the elements of some lines, and what these bear on."""
@@ -202,54 +198,62 @@ class _Job:
             data, wanted, reactions, lambda index: rewritten_ids(index, cases)
         )
 
-    def _sets(
-        self, index: StepIndex, units: Measures, elements: dict[str, int]
-    ) -> list[PropertySet]:
-        maker = SetMaker(index.schema, units, self._outcome.rules, self._moment)
-        sets: list[PropertySet] = []
-        for element, parts in self._parts.items():
+    def _write_sets(self, sets: SetWriter, elements: dict[str, int], schema: str) -> None:
+        effects = EffectsWriter(sets)
+        diagrams = DiagramWriter(sets.lines, sets.measures, schema)
+        record = RecordWriter(sets, schema, self._outcome.rules, self._moment)
+        known = [(e, parts) for e, parts in self._parts.items() if e in elements]
+        for begin in range(0, len(known), _BATCH):
+            batch = self._effects(known[begin : begin + _BATCH], record)
+            for found, tables in zip(batch, diagrams.write([f.curves for f in batch]), strict=True):
+                if tables is None:
+                    self._findings.append(_not_finite(found.element, found.results[0].line.mark))
+                    continue
+                effects.write(found)
+                if tables:
+                    sets.add(found.element, DIAGRAMS, tables)
+                record.write(found.element, found.results)
+        for element, reactions in self._supports.items():
             if element in elements:
-                sets += self._element_sets(element, parts, maker)
-        for element, found in self._supports.items():
-            if element in elements:
-                sets += self._support_sets(found, maker)
-        return sets
+                if reactions.finite:
+                    write_reactions(reactions, sets)
+                else:
+                    self._findings.append(_not_finite(element, None))
 
-    def _element_sets(self, element: str, parts: list[Part], maker: SetMaker) -> list[PropertySet]:
-        found = element_effects(element, parts)
-        if found is None:
-            return [maker.record(element, (part.result for part in parts))]
-        if not found.finite:
-            self._findings.append(_not_finite(element, found.results[0].line.mark))
-            return []
-        if len(found.results) > 1:
-            self._findings.append(_several_lines(element, found.marks))
-        sets = [maker.effects(found)]
-        if found.curves:
-            sets.append(maker.diagrams(found))
-        return [*sets, maker.record(element, found.results)]
-
-    def _support_sets(self, found: SupportReactions, maker: SetMaker) -> list[PropertySet]:
-        if not found.finite:
-            self._findings.append(_not_finite(found.element, None))
-            return []
-        made = reaction_set(found, maker)
-        return [made] if made is not None else []
+    def _effects(
+        self, elements: Sequence[tuple[str, list[Part]]], record: RecordWriter
+    ) -> list[ElementEffects]:
+        """What governs these elements, those left out whose values are no numbers."""
+        batch = []
+        for element, parts in elements:
+            found = element_effects(element, parts)
+            if found is None:
+                record.write(element, list({id(p.result): p.result for p in parts}.values()))
+            elif not found.finite:
+                self._findings.append(_not_finite(element, found.results[0].line.mark))
+            else:
+                batch.append(found)
+                if len(found.results) > 1:
+                    self._findings.append(_several_lines(element, found.marks))
+        return batch
 
     def _report(
         self,
         cleared: clearing.Cleared,
-        lines: append.Lines,
-        text: bytes,
-        sets: list[PropertySet],
-        set_ids: list[str],
+        new: Sequence[bytes],
+        written: Sequence[str],
+        groups: int,
     ) -> PostReport:
         findings = tuple(dict.fromkeys(self._findings))
-        if cleared.replaced and timeless(cleared.replaced) == timeless(text):
-            return PostReport(0, 0, len(sets), cleared.path, findings)
-        known = [(g, made) for g, made in zip(set_ids, sets, strict=True) if g in cleared.before]
-        same = sum(cleared.before.equal(g, made, lines.body) for g, made in known)
-        return PostReport(len(sets) - len(known), len(known) - same, same, cleared.path, findings)
+        if cleared.replaced and timeless(cleared.replaced) == timeless(b"".join(new)):
+            return PostReport(0, 0, len(written), cleared.path, findings, groups)
+        known = [g for g in written if g in cleared.before]
+        changed = 0
+        if known:
+            changed = cleared.before.changed(contents_in_block(b"".join(new)), known)
+        return PostReport(
+            len(written) - len(known), changed, len(known) - changed, cleared.path, findings, groups
+        )
 
 
 class _Guard:

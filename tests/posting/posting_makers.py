@@ -71,7 +71,14 @@ def span_result(
         "serviceability": _envelope("serviceability", lengths, load, "S1", stations),
     }
     checks = Verification(1e-9, 1e-15, 2.5e-14)
-    return LineResult(line, "balanced", solution, None, envelopes, checks, fingerprint)
+    return LineResult(
+        line,
+        "balanced",
+        solution,
+        envelopes=envelopes,
+        verification=checks,
+        fingerprint=fingerprint,
+    )
 
 
 def outcome_of(*results: LineResult, rules: str = "EN 1990") -> Outcome:
@@ -241,7 +248,8 @@ def analysis_model(schema: str = "IFC4", *, turned: bool = False) -> bytes:
     if turned:  # the same places in the world
         points = {40: "0.,0.,3000.", 41: "0.,-6000.,3000.", 42: "0.,-12000.,3000."}
     text += [
-        *([] if old else ["#25=IFCLOCALPLACEMENT($,#26);"]), f"#26=IFCAXIS2PLACEMENT3D(#20,$,{reference});",
+        *([] if old else ["#25=IFCLOCALPLACEMENT($,#26);"]),
+        f"#26=IFCAXIS2PLACEMENT3D(#20,$,{reference});",
         "#27=IFCDIRECTION((0.,0.,1.));", "#28=IFCDIRECTION((0.,1.,0.));",
         *[f"#{n}=IFCCARTESIANPOINT(({p}));" for n, p in points.items()],
         *[f"#{n + 3}=IFCVERTEXPOINT(#{n});" for n in points],

@@ -31,7 +31,7 @@ def round_trip(tmp_path, data, *, name="model.ifc"):
     first = StepIndex(posted.read_bytes())
     assert writer.post(posted, posted, OUTCOME).written == 0
     again = StepIndex(posted.read_bytes())
-    assert again.ids.tolist() == first.ids.tolist()
+    assert again.arrays.ids.tolist() == first.arrays.ids.tolist()
     assert writer.remove(posted, back).removed == report.written
     assert back.read_bytes() == data
     return posted, report
@@ -89,14 +89,14 @@ def test_numbers_never_meet_references_that_the_file_leaves_open(tmp_path):
     posted, _ = round_trip(tmp_path, FORMS["a reference to nothing"])
     index = StepIndex(posted.read_bytes())
 
-    assert not {41, 42, 60} & set(index.ids.tolist())
+    assert not {41, 42, 60} & set(index.arrays.ids.tolist())
 
 
 def test_numbers_at_the_limit_of_32_bits_leave_a_gap_that_is_used(tmp_path):
     data = small_model().replace(b"#30=", b"#2147483646=")
     posted, _ = round_trip(tmp_path, data)
 
-    assert max(StepIndex(posted.read_bytes()).ids.tolist()) == 2147483646
+    assert max(StepIndex(posted.read_bytes()).arrays.ids.tolist()) == 2147483646
     assert effects(posted)["SaggingMoment"] == pytest.approx(81.0)
 
 

@@ -1,39 +1,12 @@
-"""Property sets as lines of the file: the set, its properties, its relation to the element."""
+"""The elements that results belong to, found in a file by GlobalId."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Mapping
 
 from analysis_core.findings import Finding
-from analysis_core.ifc.append import Lines
-from analysis_core.ifc.global_ids import global_ids
-from analysis_core.ifc.property_sets import PropertySet
 from analysis_core.ifc.schema_classes import is_a
 from analysis_core.ifc.step_index import StepIndex
-from analysis_core.ifc.step_values import string
-
-
-def set_name(made: PropertySet) -> str:
-    """Return what the GlobalIds of a set and of its relation follow from."""
-    return f"{made.element}/{made.name}"
-
-
-def write_sets(
-    sets: Sequence[PropertySet], elements: Mapping[str, int], lines: Lines, owner: str
-) -> list[str]:
-    """Add the sets to ``lines``; return their GlobalIds.  ``elements``: instances by GlobalId."""
-    names = [set_name(made) for made in sets]
-    set_ids = global_ids(names)
-    relation_ids = global_ids(f"{name}/relation" for name in names)
-    titles = {made.name: string(made.name) for made in sets}
-    for made, set_id, relation_id in zip(sets, set_ids, relation_ids, strict=True):
-        properties = lines.shared_list(made.properties)
-        number = lines.add(f"IFCPROPERTYSET('{set_id}',{owner},{titles[made.name]},$,{properties})")
-        lines.add(
-            f"IFCRELDEFINESBYPROPERTIES('{relation_id}',{owner},$,$,"
-            f"(#{elements[made.element]}),#{number})"
-        )
-    return set_ids
 
 
 def find_elements(
@@ -50,7 +23,7 @@ def find_elements(
         objects = [
             number
             for number in rooted.get(global_id, ())
-            if is_a(index.schema, index.keyword(index.row(number)), "IfcObject")
+            if is_a(index.schema, index.kind(number), "IfcObject")
         ]
         if objects:
             found[global_id] = objects[0]
