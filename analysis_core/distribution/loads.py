@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from analysis_core.distribution.fixed_end import EndActions, end_actions
 from analysis_core.errors import ModelError
-from analysis_core.model import Action, Joint, JointForce, JointMovement, Line
+from analysis_core.model import Joint, JointForce, JointMovement, Line
 
 Floats = NDArray[np.float64]
 
@@ -111,7 +111,3 @@ def is_free(joint: Joint) -> bool:
     support = joint.support
     return support is None or not (support.vertical or support.horizontal or support.rotation)
 
-
-def case_names(actions: Sequence[Action]) -> tuple[str, ...]:
-    """Return the names of all cases that occur, in order of appearance."""
-    return tuple(dict.fromkeys(action.case for action in actions))

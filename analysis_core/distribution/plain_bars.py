@@ -66,11 +66,12 @@ def bars_of(lines: Sequence[PlainLine], plan: Layout, rows: Rows, actions: RowAc
 def spread(plan: Layout, rows: Rows, bars: Bars, start: Floats, end: Floats) -> Floats:
     """Return the end moments (2, n, C, L) of all members from those of the bars."""
     moments = np.zeros((2, plan.count, *start.shape[1:]))
-    for index, (low, high) in enumerate(plan.bars):
-        simple = bars.simple[index]
+    firsts = [low for low, _ in plan.bars]
+    moments[0, firsts], moments[1, firsts] = start, end
+    for index, simple in enumerate(bars.simple):
         if simple is None:
-            moments[0, low], moments[1, low] = start[index], end[index]
             continue
+        low, high = plan.bars[index]
         reached = np.concatenate([np.zeros((1, rows.length.shape[1])), rows.length[low:high]])
         x = reached.cumsum(0)[:, None]
         whole = x[-1]

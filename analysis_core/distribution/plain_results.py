@@ -73,8 +73,8 @@ class _Batch:
     def _walk(self) -> None:
         """Pass from supports to the bare joints beyond them, member by member."""
         length = self.rows.length
-        for low, high in (*self.plan.bars, (self.plan.last, self.plan.count)):
-            stop = high if low == self.plan.last else high - 1
+        inner = [(low, high - 1) for low, high in self.plan.bars if high - low > 1]
+        for low, stop in (*inner, (self.plan.last, self.plan.count)):
             for member in range(low, stop):
                 chord = self.turns[member] - self.bent[0, member]
                 self.fall[member + 1] = self.fall[member] + chord * length[member]
@@ -158,17 +158,18 @@ class _Batch:
     def _verify(self) -> None:
         """What is left over on joints and members, and between joints and member ends, per line."""
         rows, actions = self.rows, self.actions
-        unbalance = np.abs(self.needed - self.couples).max((0, 1))
+        unbalance = np.abs(self.needed - self.couples).max((0, 1), initial=0.0)
         within = self.start + self.end + self.shear_end * rows.length[:, None] + actions.lever
-        across = np.abs(self.shear_start - self.shear_end - actions.total).max((0, 1))
+        across = np.abs(self.shear_start - self.shear_end - actions.total).max((0, 1), initial=0.0)
         lost = np.maximum(across, np.abs(self.lost).max((0, 1), initial=0.0))
         self.residual = np.maximum(
-            np.maximum(unbalance, np.abs(within).max((0, 1))), lost * rows.length.max(0)
+            np.maximum(unbalance, np.abs(within).max((0, 1), initial=0.0)),
+            lost * rows.length.max(0),
         )
         apart = np.abs(self.own - self.joined)
         if rows.special:
             apart[np.broadcast_to(rows.released[:, :, None], apart.shape)] = 0.0
-        self.apart = apart.max((0, 1, 2))
+        self.apart = apart.max((0, 1, 2), initial=0.0)
 
     def solutions(self) -> list[LineSolution]:
         """One solution per line, as views into arrays over all of them."""
