@@ -15,6 +15,7 @@ from analysis_core.ifc.frames import Frame
 from analysis_core.ifc.mesh_cuts import hull
 from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.records import Record
 from analysis_core.ifc.unreadable import READ_ERRORS
 
 Ring = tuple[tuple[float, float], ...]
@@ -40,7 +41,9 @@ class AreaReader:
             if host is not None and opening is not None:
                 self._openings.setdefault(host.id(), []).append(opening)
 
-    def area(self, entity: Any, items: Sequence[Item], frame: Frame, extent: Extent) -> Area | None:
+    def area(
+        self, record: Record, items: Sequence[Item], frame: Frame, extent: Extent
+    ) -> Area | None:
         """Return a slab or space as an area, None where it has no plan outline."""
         plans = [plan for item in items if (plan := _plan(item, frame)) is not None]
         if not plans:
@@ -55,30 +58,31 @@ class AreaReader:
                 "area-outline",
                 ": its body has several parts; area loads take their convex outline",
                 "Draw the slab as one body where that is too much.",
-                entity,
+                record,
             )
-        voids = [*plan.voids, *self._opening_rings(entity, plan, extent)]
+        voids = [*plan.voids, *self._opening_rings(record, plan, extent)]
         elements = self._elements
-        space = entity.is_a("IfcSpace")
+        space = record.ifc_class == "IfcSpace"
         return Area(
-            global_id=entity[0],
-            name=entity[2] or "",
-            ifc_class=entity.is_a(),
+            global_id=record.global_id,
+            name=record.name,
+            ifc_class=record.ifc_class,
             bottom=extent.bottom,
             top=extent.bottom if space else extent.top,
             outline=_ring(plan.outline),
             voids=tuple(_ring(void) for void in voids),
-            storey=elements.storey(entity),
-            type_name="" if space else elements.type_name(entity),
-            material=None if space else elements.unnoted_material(elements.choice(entity)),
+            storey=elements.storey(record),
+            type_name="" if space else elements.type_name(record),
+            material=None if space else elements.unnoted_material(elements.choice(record)),
         )
 
-    def _opening_rings(self, entity: Any, plan: _Plan, extent: Extent) -> list[Floats]:
+    def _opening_rings(self, record: Record, plan: _Plan, extent: Extent) -> list[Floats]:
         rings: list[Floats] = []
-        for opening in self._openings.get(entity.id(), ()):
+        for opening in self._openings.get(record.id, ()):
             try:
-                frame = self._elements.frame(opening)
-                items = self._elements.shape(opening).items
+                hole_record = Record.of(opening)
+                frame = self._elements.frame(hole_record)
+                items = self._elements.shape(hole_record).items
             except READ_ERRORS:
                 continue
             reach = self._extents.extent(items, frame)
@@ -96,7 +100,7 @@ class AreaReader:
                         "opening-at-edge",
                         "with an opening that cuts the edge; area loads take them without it",
                         "Draw the slab's outline as it is where that matters.",
-                        entity,
+                        record,
                     )
         return rings
 

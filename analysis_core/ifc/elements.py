@@ -5,6 +5,7 @@ from __future__ import annotations
 from contextlib import suppress
 from typing import Any
 
+from analysis_core.findings import Finding
 from analysis_core.ifc import frames
 from analysis_core.ifc.bodies import BodyReader
 from analysis_core.ifc.body_items import Shape
@@ -15,6 +16,7 @@ from analysis_core.ifc.materials import MaterialReader
 from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.placements import Placements
 from analysis_core.ifc.profile_properties import stated_by_profile
+from analysis_core.ifc.records import Record
 from analysis_core.ifc.relations import Relations
 from analysis_core.ifc.sections import SectionReader, measures_of
 from analysis_core.ifc.source import Source
@@ -38,6 +40,9 @@ class Elements:
         self._materials = MaterialReader(self.file, source.units, settings)
         self._choices: dict[int, Choice] = {}
         self._storeys: dict[int, str] = {}
+        self._storey_names: dict[int, str | None] = {}
+        self._type_names: dict[int, str] = {}
+        self._materials_used: dict[int, tuple[Material | None, tuple[Finding, ...], list[str]]] = {}
 
     def of_class(self, ifc_class: str) -> tuple[Any, ...] | None:
         """Return the entities of a class and its subclasses, None where the schema lacks it."""
@@ -59,19 +64,34 @@ class Elements:
             found.append((name, elevation))
         return tuple(sorted(found, key=lambda pair: pair[1]))
 
-    def storey(self, entity: Any) -> str | None:
+    def storey(self, record: Record) -> str | None:
         """Return the name of the storey that holds an element."""
-        storey = self.relations.storey(entity)
-        return None if storey is None else self._storeys.get(storey.id())
+        container = self.relations.container_of.get(record.id)
+        if container is None:
+            if record.id not in self.relations.whole_of:
+                return None
+            container = self.relations.container(record.entity)
+            if container is None:
+                return None
+        key = container.id()
+        if key not in self._storey_names:
+            storey = self.relations.storey_above(container)
+            self._storey_names[key] = None if storey is None else self._storeys.get(storey.id())
+        return self._storey_names[key]
 
-    def type_name(self, entity: Any) -> str:
+    def type_name(self, record: Record) -> str:
         """Return the name of an element's type, else its ObjectType."""
-        type_ = self.relations.type_of.get(entity.id())
-        return (type_[2] if type_ is not None else None) or entity[4] or ""
+        type_ = self.relations.type_of.get(record.id)
+        if type_ is None:
+            return record.object_type
+        key = type_.id()
+        if key not in self._type_names:
+            self._type_names[key] = type_[2] or ""
+        return self._type_names[key] or record.object_type
 
-    def choice(self, entity: Any) -> Choice:
+    def choice(self, record: Record) -> Choice:
         """Return material and profile associated with an element."""
-        select = self.relations.material(entity)
+        select = self.relations.material(record.id)
         if select is None:
             return NO_CHOICE
         key = select.id()
@@ -79,48 +99,57 @@ class Elements:
             self._choices[key] = choose(select)
         return self._choices[key]
 
-    def material(self, entity: Any, choice: Choice) -> Material | None:
-        """Return the material of an element; what was noticed goes to the notes."""
+    def material(self, record: Record, choice: Choice) -> Material | None:
+        """Return the material of an element; what was noticed goes to the notes at the end."""
         if choice.material is None:
             return None
-        material, found = self._materials.read(choice.material)
-        for finding in found:
-            self._notes.add(finding, entity[0])
         if choice.note:
-            self._notes.group("note", "material-choice", f": {choice.note}", "", entity)
-        return material
+            self._notes.group("note", "material-choice", f": {choice.note}", "", record)
+        key = choice.material.id()
+        known = self._materials_used.get(key)
+        if known is None:
+            material, found = self._materials.read(choice.material)
+            known = self._materials_used[key] = (material, found, [])
+        known[2].append(record.global_id)
+        return known[0]
+
+    def note_materials(self) -> None:
+        """Note what was noticed about the materials that were used."""
+        for _, found, users in self._materials_used.values():
+            for finding in found:
+                self._notes.add_for(finding, users)
 
     def unnoted_material(self, choice: Choice) -> Material | None:
         """Return a material without noting anything: its name is all that is wanted."""
         return self._materials.read(choice.material)[0] if choice.material is not None else None
 
-    def frame(self, entity: Any) -> Frame:
+    def frame(self, record: Record) -> Frame:
         """Return the world frame of an element.  Raises UnreadableShapeError."""
         try:
-            return self.placements.frame(entity[5])
+            return self.placements.frame(record.placement)
         except UnreadableShapeError:
             raise
         except READ_ERRORS as error:
             raise UnreadableShapeError("its placement does not fit the standard") from error
 
-    def shape(self, entity: Any) -> Shape:
+    def shape(self, record: Record) -> Shape:
         """Return the shape of an element, or of its parts where it has none of its own.
 
         A body of an unsupported kind is left to the general-purpose geometry library.
         """
-        definition = entity[6]
-        shape = self._bodies.read(definition)
+        shape = self._bodies.read(record.shape)
         if shape.items:
             return shape
-        if definition is not None and shape.troubles:
-            mesh = library_mesh(definition)
+        if record.shape is not None and shape.troubles:
+            mesh = library_mesh(record.shape)
             if mesh is not None:
                 return shape._replace(items=(mesh,), troubles=())
         items = shape.items
-        for part in self.relations.parts_of.get(entity.id(), ()):
-            if part.is_a("IfcElement") and part[6] is not None:
+        for entity in self.relations.parts_of.get(record.id, ()):
+            if entity.is_a("IfcElement") and entity[6] is not None:
                 with suppress(*READ_ERRORS):
-                    relative = frames.compose(frames.inverse(self.frame(entity)), self.frame(part))
-                    inner = self._bodies.read(part[6])
+                    part = Record.of(entity)
+                    relative = frames.compose(frames.inverse(self.frame(record)), self.frame(part))
+                    inner = self._bodies.read(part.shape)
                     items += tuple(item.moved(relative) for item in inner.items)
         return shape._replace(items=items)

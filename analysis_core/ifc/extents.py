@@ -87,7 +87,7 @@ class ExtentReader:
             corners.reverse()
         return Extent(tuple(corners), min(z0, z0 + vz), max(z0, z0 + vz))
 
-    def of_stick(self, stick: Stick) -> Extent:
+    def of_stick(self, stick: Stick, frame: Frame) -> Extent:
         """Return the extent of a member drawn as an axis only: its profile, or a thin line."""
         half = 0.05
         around = ((-half, -half), (half, -half), (half, half), (-half, half))
@@ -97,7 +97,7 @@ class ExtentReader:
         for base in (stick.start, stick.end):
             for x, y in corners:
                 p = frames.plus(base, stick.x_axis, x - x0)
-                points.append(frames.plus(p, stick.y_axis, y - y0))
+                points.append(frames.point(frame, *frames.plus(p, stick.y_axis, y - y0)))
         return extent_of(points)
 
     def _points(self, item: Item, frame: Frame) -> Iterable[Vector]:

@@ -4,11 +4,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from typing import Any
+from itertools import combinations
+
+import numpy as np
 
 from analysis_core.building import AxisMember
 from analysis_core.findings import Finding
 from analysis_core.ifc.notes import Notes
+from analysis_core.ifc.records import Record
 from analysis_core.ifc.sections import Profile
 from analysis_core.ifc.sticks import Stick
 from analysis_core.model import Section
@@ -16,13 +19,15 @@ from analysis_core.model import Section
 _OFFSET_WORTH_TELLING = 0.01
 _PROFILES_AGREE = 0.02
 _SAME_PLACE = 0.02
-_CELL = 1.0
+_MOST_IN_ONE_PLACE = 20
 
 
-def note_stick(entity: Any, stick: Stick, notes: Notes) -> None:
+def note_stick(record: Record, stick: Stick, notes: Notes) -> None:
     """Note what had to be assumed about a member's line, and how far its drawn axis is off."""
+    if stick.offset <= _OFFSET_WORTH_TELLING and not stick.remarks:
+        return
     for remark in stick.remarks:
-        notes.group("note", "body-assumed", f": {remark}", "", entity)
+        notes.group("note", "body-assumed", f": {remark}", "", record)
     if stick.offset > _OFFSET_WORTH_TELLING:
         notes.spread(
             "note",
@@ -30,12 +35,12 @@ def note_stick(entity: Any, stick: Stick, notes: Notes) -> None:
             "drawn axis lies off the centroid line of the body; direction and extent were taken "
             "from the axis, the position from the body",
             stick.offset,
-            entity,
+            record,
         )
 
 
 def note_section(
-    entity: Any,
+    record: Record,
     section: Section | None,
     drawn: Profile | None,
     stated: Profile | None,
@@ -43,7 +48,7 @@ def note_section(
 ) -> None:
     """Note a missing section, and an associated profile that contradicts the body."""
     if section is None:
-        notes.no_section(entity)
+        notes.no_section(record)
         return
     if drawn is not None and stated is not None:
         pairs = (
@@ -60,7 +65,7 @@ def note_section(
                 f"'{stated.name or stated.drawn.shape}' of {stated.moments.area * 1e4:.4g} cm²; "
                 f"the body was taken",
                 "Correct the body or the profile.",
-                entity,
+                record,
             )
 
 
@@ -83,30 +88,32 @@ def note_duplicates(members: list[AxisMember], notes: Notes) -> None:
 
 def _doubles(members: Sequence[AxisMember]) -> list[tuple[AxisMember, AxisMember]]:
     found = []
-    seen: dict[tuple[int, int, int], list[AxisMember]] = {}
-    for member in members:
-        cells = _cells(member)
-        twin = next(
-            (other for cell in cells for other in seen.get(cell, ()) if _same(member, other)), None
-        )
-        if twin is not None:
-            found.append((twin, member))
-        else:
-            for cell in cells:
-                seen.setdefault(cell, []).append(member)
+    gone: set[int] = set()
+    for first, second in _candidates(members):
+        if first not in gone and second not in gone and _same(members[first], members[second]):
+            gone.add(second)
+            found.append((members[first], members[second]))
     return found
 
 
-def _cells(member: AxisMember) -> set[tuple[int, int, int]]:
-    """Cells of a coarse grid in which the middle lies, its neighbours too where it is near."""
-    (x, y, z), (x2, y2, z2) = member.start, member.end
-    middle = (0.5 * (x + x2), 0.5 * (y + y2), 0.5 * (z + z2))
-    low = [math.floor((c - 0.5 * _SAME_PLACE) / _CELL) for c in middle]
-    high = [math.floor((c + 0.5 * _SAME_PLACE) / _CELL) for c in middle]
-    if low == high:
-        return {(low[0], low[1], low[2])}
-    return {(i, j, k) for i in (low[0], high[0]) for j in (low[1], high[1])
-            for k in (low[2], high[2])}  # fmt: skip
+def _candidates(members: Sequence[AxisMember]) -> list[tuple[int, int]]:
+    """Pairs whose middles share a cell of a grid, tried with eight grids half a cell apart."""
+    if len(members) < 2:
+        return []
+    ends = np.array([(member.start, member.end) for member in members])
+    middles = ends.mean(axis=1)
+    middles -= middles[0]
+    pairs: set[tuple[int, int]] = set()
+    for shift in range(8):
+        offset = np.array([shift & 1, shift >> 1 & 1, shift >> 2]) * 0.5
+        cells = np.floor(middles / (2.0 * _SAME_PLACE) + offset).astype(np.int64)
+        order = np.lexsort(cells.T)
+        new = np.concatenate([[True], (cells[order][1:] != cells[order][:-1]).any(axis=1), [True]])
+        starts = np.flatnonzero(new)
+        for i in np.flatnonzero(np.diff(starts) > 1).tolist():
+            group = sorted(order[starts[i] : starts[i + 1]].tolist())
+            pairs.update(combinations(group[:_MOST_IN_ONE_PLACE], 2))
+    return sorted(pairs)
 
 
 def _same(a: AxisMember, b: AxisMember) -> bool:

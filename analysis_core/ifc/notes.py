@@ -3,17 +3,11 @@
 from __future__ import annotations
 
 from dataclasses import replace
-from typing import Any
 
 from analysis_core.findings import Finding, Severity
+from analysis_core.ifc.records import Record
 
 _NAMED_AT_MOST = 5
-
-
-def named(entity: Any) -> str:
-    """Return how a message calls an element."""
-    name = entity[2] or "without a name"
-    return f"{entity.is_a()} '{name}'"
 
 
 class Notes:
@@ -30,23 +24,31 @@ class Notes:
         if element:
             elements[element] = None
 
-    def group(self, severity: Severity, slug: str, what: str, advice: str, entity: Any) -> None:
+    def add_for(self, finding: Finding, elements: list[str]) -> None:
+        """Note a finding for many elements."""
+        self._shared.setdefault(finding, {}).update(dict.fromkeys(elements))
+
+    def group(self, severity: Severity, slug: str, what: str, advice: str, record: Record) -> None:
         """Note the same thing about one more element: ``what`` reads on after "N elements"."""
         self._groups.setdefault((severity, slug, what, advice), []).append(
-            (entity[0] or f"#{entity.id()}", entity[2] or "")
+            (record.key, record.name)
         )
 
     def spread(
-        self, severity: Severity, slug: str, what: str, distance: float, entity: Any
+        self, severity: Severity, slug: str, what: str, distance: float, record: Record
     ) -> None:
         """Note a distance (m) found at one more element; the finding gives their range."""
         self._ranges.setdefault((severity, slug, what), []).append(
-            (distance, entity[0], entity[2] or "")
+            (distance, record.key, record.name)
         )
 
-    def no_identity(self, entity: Any) -> None:
+    def no_identity(self, record: Record) -> None:
         """Note an element that results could not be given to."""
-        what = "whose GlobalId another element has as well" if entity[0] else "without a GlobalId"
+        what = (
+            "whose GlobalId another element has as well"
+            if record.global_id
+            else "without a GlobalId"
+        )
         self._groups.setdefault(
             (
                 "error",
@@ -55,7 +57,7 @@ class Notes:
                 "Give each element a GlobalId of its own.",
             ),
             [],
-        ).append((entity[0] or f"#{entity.id()}", entity[2] or ""))
+        ).append((record.key, record.name))
 
     def unknown_class(self, ifc_class: str, schema: str) -> None:
         """Note a class that was asked for and that the schema does not have."""
@@ -68,46 +70,46 @@ class Notes:
             )
         )
 
-    def left_out(self, reason: str, entity: Any) -> None:
+    def left_out(self, reason: str, record: Record) -> None:
         """Note an element that is no beam."""
         self.group(
             "note",
             "not-a-beam",
             f"not taken as beams: {reason}",
             "The rules can be changed in the job file (beams).",
-            entity,
+            record,
         )
 
-    def curved(self, entity: Any, reason: str) -> None:
+    def curved(self, record: Record, reason: str) -> None:
         """Note a curved member."""
         self.add(
             Finding(
                 "warning",
                 "curved-member",
-                f"{named(entity)} is curved ({reason}) and is not analysed; only straight members "
+                f"{record.called} is curved ({reason}) and is not analysed; only straight members "
                 f"are. Draw it as straight pieces if that is near enough.",
-                (entity[0],),
+                (record.key,),
             )
         )
 
-    def no_shape(self, entity: Any, reason: str) -> None:
+    def no_shape(self, record: Record, reason: str) -> None:
         """Note an element whose place or body cannot be told."""
         self.group(
             "warning",
             "no-representation",
             f"left out, because no axis and no body could be read: {reason}",
             "Export them with their geometry.",
-            entity,
+            record,
         )
 
-    def no_section(self, entity: Any) -> None:
+    def no_section(self, record: Record) -> None:
         """Note a member without a section."""
         self.group(
             "warning",
             "no-section",
             "without a section that could be read",
             "Give area and inertia in the job file (sections).",
-            entity,
+            record,
         )
 
     def findings(self) -> list[Finding]:

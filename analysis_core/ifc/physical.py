@@ -10,19 +10,21 @@ from dataclasses import replace
 from typing import Any
 
 from analysis_core.building import Area, AxisMember, Building, Carrier
-from analysis_core.ifc import roles
 from analysis_core.ifc.areas import AreaReader
 from analysis_core.ifc.body_items import Shape
 from analysis_core.ifc.elements import Elements
 from analysis_core.ifc.end_releases import NOT_STATED, end_releases
 from analysis_core.ifc.extents import Extent, ExtentReader
-from analysis_core.ifc.frames import Frame, Vector
+from analysis_core.ifc.frames import Frame, point
 from analysis_core.ifc.main_prism import CurvedMemberError
 from analysis_core.ifc.material_choice import Choice
 from analysis_core.ifc.member_notes import note_duplicates, note_section, note_stick
 from analysis_core.ifc.notes import Notes
+from analysis_core.ifc.outline import Matrix
+from analysis_core.ifc.records import Record
+from analysis_core.ifc.roles import RoleJudge, carrier_label, excluded_by_proportion
 from analysis_core.ifc.source import Source
-from analysis_core.ifc.sticks import Stick, section_matrix, stick_of, upright, with_profile
+from analysis_core.ifc.sticks import Layer, Lying, Stick, stick_of, with_profile
 from analysis_core.ifc.unreadable import UnreadableShapeError
 from analysis_core.model import Section
 from analysis_core.settings import Settings
@@ -79,6 +81,8 @@ class _Reader:
         self._named_sections: dict[tuple[int, str], tuple[Section, Section]] = {}
         self._steepest = math.sin(settings.tolerances.beam_slope)
         self._ids: set[str] = set()
+        self._roles = RoleJudge(settings.beams)
+        self._layer = Layer()
         self._ends = end_releases(source.file)
         self._area_reader = AreaReader(self._elements, self._extents, self._notes)
         self._areas: list[Area] = []
@@ -96,6 +100,7 @@ class _Reader:
         if self._settings.area_actions:
             self._read_all("IfcSpace", self._read_space, done)
         self._count("taken as beams", len(self._members))
+        self._elements.note_materials()
         self._note_relations()
         note_duplicates(self._members, self._notes)
         return Building(
@@ -120,79 +125,77 @@ class _Reader:
                 self._notes.unknown_class(ifc_class, self._source.schema)
             return
         for entity in found:
-            key = entity.id()
-            if key in done:
+            record = Record.of(entity)
+            if record.id in done:
                 continue
-            done.add(key)
-            self._count(entity.is_a())
-            global_id = entity[0]
-            if not global_id or global_id in self._ids:
-                self._notes.no_identity(entity)
+            done.add(record.id)
+            self._count(record.ifc_class)
+            if not record.global_id or record.global_id in self._ids:
+                self._notes.no_identity(record)
                 continue
-            self._ids.add(global_id)
+            self._ids.add(record.global_id)
             try:
-                reader(entity)
+                reader(record)
             except UnreadableShapeError as error:
-                self._notes.no_shape(entity, str(error))
+                self._notes.no_shape(record, str(error))
 
-    def _read_beam(self, entity: Any) -> None:
-        elements, rules = self._elements, self._settings.beams
-        role = roles.excluded_by_role(entity, elements.relations.wholes(entity), rules)
+    def _read_beam(self, record: Record) -> None:
+        elements = self._elements
+        role = self._roles.excluded(record, elements.relations.wholes(record.id))
         if role:
-            self._leave_out(role, entity)
+            self._leave_out(role, record)
             return
-        frame = elements.frame(entity)
-        shape = elements.shape(entity)
-        choice = elements.choice(entity)
+        frame = elements.frame(record)
+        shape = elements.shape(record)
+        choice = elements.choice(record)
         try:
-            stick = self._stick(shape, choice).moved(frame)
+            stick = self._stick(shape, choice)
         except CurvedMemberError as error:
             self._count("curved")
-            self._notes.curved(entity, str(error))
+            self._notes.curved(record, str(error))
             return
-        size, rise = stick.length, stick.end[2] - stick.start[2]
-        up = upright(stick.start, stick.end, stick.y_axis)
-        section, end_section = self._sections(entity, stick, up)
+        lying = self._layer.lay(stick, frame)
+        size, rise = stick.length, lying.end[2] - lying.start[2]
+        section, end_section = self._sections(record, stick, lying.matrix)
         if section is None and choice.profile is not None:
             # No outline, but perhaps values in the property sets of the associated profile.
             section = elements.sections.section(choice.profile)
-        sizes = roles.Sizes.of(size, rise, section)
-        reason = roles.excluded_by_proportion(sizes, rules)
+        reason = excluded_by_proportion(size, section, self._settings.beams)
         if reason:
-            self._leave_out(reason, entity)
-            label = roles.carrier_label(reason)
+            self._leave_out(reason, record)
+            label = carrier_label(reason)
             if label and shape.items:
-                self._add_carrier(entity, shape, frame, choice, f"{entity.is_a()} ({label})")
+                self._add_carrier(record, shape, frame, choice, f"{record.ifc_class} ({label})")
             return
         if abs(rise) > self._steepest * size:
             self._count("taken as columns")
-            self._add_column(entity, shape, frame, stick, choice)
+            self._add_column(record, shape, frame, stick, choice)
             return
-        self._note_member(entity, stick, choice, section)
+        self._note_member(record, stick, choice, section)
         self._members.append(
             AxisMember(
-                global_id=entity[0],
-                name=entity[2] or "",
-                ifc_class=entity.is_a(),
-                start=stick.start,
-                end=stick.end,
-                up=up,
+                global_id=record.global_id,
+                name=record.name,
+                ifc_class=record.ifc_class,
+                start=lying.start,
+                end=lying.end,
+                up=lying.up,
                 section=section,
                 end_section=end_section,
-                material=elements.material(entity, choice),
-                storey=elements.storey(entity),
-                type_name=elements.type_name(entity),
+                material=elements.material(record, choice),
+                storey=elements.storey(record),
+                type_name=elements.type_name(record),
                 axis_offset=stick.offset,
                 note="; ".join(stick.remarks),
-                end_stiffness=self._ends.get(entity.id(), NOT_STATED),
-                modelled_start=stick.body_start,
-                modelled_end=stick.body_end,
+                end_stiffness=self._ends.get(record.id, NOT_STATED),
+                modelled_start=point(frame, *stick.body_start) if stick.body_start else None,
+                modelled_end=point(frame, *stick.body_end) if stick.body_end else None,
             )
         )
 
-    def _leave_out(self, reason: str, entity: Any) -> None:
+    def _leave_out(self, reason: str, record: Record) -> None:
         self._count("left out")
-        self._notes.left_out(reason, entity)
+        self._notes.left_out(reason, record)
 
     def _stick(self, shape: Shape, choice: Choice) -> Stick:
         stick = stick_of(shape)
@@ -203,36 +206,35 @@ class _Reader:
         return stick
 
     def _note_member(
-        self, entity: Any, stick: Stick, choice: Choice, section: Section | None
+        self, record: Record, stick: Stick, choice: Choice, section: Section | None
     ) -> None:
         sections = self._elements.sections
-        for profile in (stick.entity, stick.end_entity):
-            if profile is not None:
-                for finding in sections.findings(profile):
-                    self._notes.add(finding, entity[0])
-        note_stick(entity, stick, self._notes)
+        if sections.noticed:
+            for profile in (stick.entity, stick.end_entity):
+                for finding in sections.findings(profile) if profile is not None else ():
+                    self._notes.add(finding, record.global_id)
+        note_stick(record, stick, self._notes)
         stated = None
         if choice.profile is not None and choice.profile != stick.entity:
             stated = sections.profile(choice.profile)
-        note_section(entity, section, stick.profile, stated, self._notes)
+        note_section(record, section, stick.profile, stated, self._notes)
 
     def _sections(
-        self, entity: Any, stick: Stick, up: Vector
+        self, record: Record, stick: Stick, matrix: Matrix
     ) -> tuple[Section | None, Section | None]:
         if stick.profile is None:
             return None, None
-        matrix = section_matrix(stick, up)
         oriented = self._elements.sections.oriented
-        section = self._named(oriented(stick.profile, matrix, stick.entity), entity)
+        section = self._named(oriented(stick.profile, matrix, stick.entity), record)
         if stick.end_profile is None:
             return section, None
-        return section, self._named(oriented(stick.end_profile, matrix, stick.end_entity), entity)
+        return section, self._named(oriented(stick.end_profile, matrix, stick.end_entity), record)
 
-    def _named(self, section: Section, entity: Any) -> Section:
+    def _named(self, section: Section, record: Record) -> Section:
         """Give a section without a name that of the element's type; one object per name."""
         if section.name:
             return section
-        name = self._elements.type_name(entity)
+        name = self._elements.type_name(record)
         if not name:
             return section
         key = (id(section), name)
@@ -240,92 +242,90 @@ class _Reader:
             self._named_sections[key] = (section, replace(section, name=name))
         return self._named_sections[key][1]
 
-    def _read_column(self, entity: Any) -> None:
-        frame = self._elements.frame(entity)
-        shape = self._elements.shape(entity)
-        choice = self._elements.choice(entity)
+    def _read_column(self, record: Record) -> None:
+        frame = self._elements.frame(record)
+        shape = self._elements.shape(record)
+        choice = self._elements.choice(record)
         try:
-            stick = self._stick(shape, choice).moved(frame)
+            stick = self._stick(shape, choice)
         except UnreadableShapeError:
-            self._add_carrier(entity, shape, frame, choice, entity.is_a())
+            self._add_carrier(record, shape, frame, choice, record.ifc_class)
             return
-        self._add_column(entity, shape, frame, stick, choice)
+        self._add_column(record, shape, frame, stick, choice)
 
-    def _read_carrier(self, entity: Any) -> None:
-        frame = self._elements.frame(entity)
-        shape = self._elements.shape(entity)
-        self._add_carrier(entity, shape, frame, self._elements.choice(entity), entity.is_a())
+    def _read_carrier(self, record: Record) -> None:
+        frame = self._elements.frame(record)
+        shape = self._elements.shape(record)
+        self._add_carrier(record, shape, frame, self._elements.choice(record), record.ifc_class)
 
-    def _read_slab(self, entity: Any) -> None:
-        frame = self._elements.frame(entity)
-        shape = self._elements.shape(entity)
+    def _read_slab(self, record: Record) -> None:
+        frame = self._elements.frame(record)
+        shape = self._elements.shape(record)
         extent = self._add_carrier(
-            entity, shape, frame, self._elements.choice(entity), entity.is_a()
+            record, shape, frame, self._elements.choice(record), record.ifc_class
         )
-        self._add_area(entity, shape, frame, extent)
+        self._add_area(record, shape, frame, extent)
 
-    def _read_space(self, entity: Any) -> None:
-        frame = self._elements.frame(entity)
-        shape = self._elements.shape(entity)
+    def _read_space(self, record: Record) -> None:
+        frame = self._elements.frame(record)
+        shape = self._elements.shape(record)
         extent = self._extents.extent(shape.items, frame)
         if extent is None:
             raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
-        self._add_area(entity, shape, frame, extent)
+        self._add_area(record, shape, frame, extent)
 
-    def _add_area(self, entity: Any, shape: Shape, frame: Frame, extent: Extent) -> None:
-        area = self._area_reader.area(entity, shape.items, frame, extent)
+    def _add_area(self, record: Record, shape: Shape, frame: Frame, extent: Extent) -> None:
+        area = self._area_reader.area(record, shape.items, frame, extent)
         if area is not None:
             self._areas.append(area)
 
     def _add_column(
-        self, entity: Any, shape: Shape, frame: Frame, stick: Stick, choice: Choice
+        self, record: Record, shape: Shape, frame: Frame, stick: Stick, choice: Choice
     ) -> None:
         extent = self._extents.extent(shape.items, frame)
         if extent is None:
-            extent = self._extents.of_stick(stick)
-        start, end = stick.start, stick.end
-        if start[2] > end[2]:
-            start, end = end, start
-        up = upright(start, end, stick.y_axis)
-        section, _ = self._sections(entity, stick._replace(start=start, end=end), up)
-        self._append(entity, entity.is_a(), extent, choice, start, end, section, up)
+            extent = self._extents.of_stick(stick, frame)
+        lying = self._layer.lay(stick, frame)
+        if lying.start[2] > lying.end[2]:
+            stick = stick.reversed()
+            lying = self._layer.lay(stick, frame)
+        section, _ = self._sections(record, stick, lying.matrix)
+        self._append(record, record.ifc_class, extent, choice, lying, section)
 
     def _add_carrier(
-        self, entity: Any, shape: Shape, frame: Frame, choice: Choice, ifc_class: str
+        self, record: Record, shape: Shape, frame: Frame, choice: Choice, ifc_class: str
     ) -> Extent:
         extent = self._extents.extent(shape.items, frame)
         if extent is None:
             raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
         for piece in self._extents.pieces(shape.items, frame):
-            self._append(entity, ifc_class, piece, choice)
+            self._append(record, ifc_class, piece, choice)
         return extent
 
     def _append(
         self,
-        entity: Any,
+        record: Record,
         ifc_class: str,
         extent: Extent,
         choice: Choice,
-        start: Vector | None = None,
-        end: Vector | None = None,
+        lying: Lying | None = None,
         section: Section | None = None,
-        up: Vector = (1.0, 0.0, 0.0),
     ) -> None:
         elements = self._elements
         self._carriers.append(
             Carrier(
-                global_id=entity[0],
-                name=entity[2] or "",
+                global_id=record.global_id,
+                name=record.name,
                 ifc_class=ifc_class,
                 bottom=extent.bottom,
                 top=extent.top,
                 corners=extent.corners,
-                start=start,
-                end=end,
+                start=lying.start if lying else None,
+                end=lying.end if lying else None,
                 section=section,
-                material=elements.material(entity, choice) if start is not None else None,
-                storey=elements.storey(entity),
-                up=up,
+                material=elements.material(record, choice) if lying else None,
+                storey=elements.storey(record),
+                up=lying.up if lying else (1.0, 0.0, 0.0),
             )
         )
 
@@ -341,7 +341,7 @@ class _Reader:
                     "two-containers",
                     f"contained in more than one place ({names}); the first was taken",
                     "Contain each element once.",
-                    entity,
+                    Record.of(entity),
                 )
         for relation in self._source.file.by_type("IfcRelVoidsElement"):
             entity = relation[4]
@@ -351,5 +351,5 @@ class _Reader:
                     "openings-ignored",
                     "with openings; their sections were taken without them",
                     "Check the section at the opening by hand.",
-                    entity,
+                    Record.of(entity),
                 )

@@ -21,15 +21,13 @@ class Relations:
         self.whole_of: Grouped = {}
         self.parts_of: dict[int, tuple[Any, ...]] = {}
         self.twice_contained: dict[int, list[Any]] = {}
-        self._storey_of: Grouped = {}
         self._spread(file, "IfcRelDefinesByType", self.type_of)
         self._spread(file, "IfcRelAssociatesMaterial", self.material_of)
         self._contain(file)
         self._aggregate(file)
 
-    def material(self, element: Any) -> Any:
+    def material(self, key: int) -> Any:
         """Return the material selected for an element: its own, else that of its type."""
-        key = element.id()
         found = self.material_of.get(key)
         if found is None:
             type_ = self.type_of.get(key)
@@ -49,17 +47,8 @@ class Relations:
                 return None
         return None
 
-    def storey(self, element: Any) -> Any:
-        """Return the IfcBuildingStorey an element belongs to, or None."""
-        container = self.container(element)
-        if container is None:
-            return None
-        key = container.id()
-        if key not in self._storey_of:
-            self._storey_of[key] = self._storey_above(container)
-        return self._storey_of[key]
-
-    def _storey_above(self, spatial: Any) -> Any:
+    def storey_above(self, spatial: Any) -> Any:
+        """Return the IfcBuildingStorey that a spatial element is or is part of, or None."""
         here = spatial
         for _ in range(20):
             if here is None or here.is_a("IfcBuildingStorey"):
@@ -67,9 +56,9 @@ class Relations:
             here = self.whole_of.get(here.id())
         return None
 
-    def wholes(self, element: Any) -> Iterable[Any]:
+    def wholes(self, key: int) -> Iterable[Any]:
         """Yield the elements that an element is part of, nearest first."""
-        here = self.whole_of.get(element.id())
+        here = self.whole_of.get(key)
         for _ in range(20):
             if here is None:
                 return

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Iterable
-from typing import Any, NamedTuple
+from typing import Any
 
+from analysis_core.ifc.records import Record
 from analysis_core.model import Section
 from analysis_core.settings import BeamRules
 
@@ -34,58 +34,60 @@ _HOSTS = {
 }
 
 
-class Sizes(NamedTuple):
-    """What proportions are judged by, in m and rad: length, slope, and the section's extents."""
+class RoleJudge:
+    """Judges elements by predefined type and by what they are part of."""
 
-    length: float
-    slope: float
-    depth: float
-    width: float
-    solid: bool
+    def __init__(self, rules: BeamRules) -> None:
+        self._rules = rules
+        self._place_of_type: dict[str, int] = {}
 
-    @classmethod
-    def of(cls, length: float, rise: float, section: Section | None) -> Sizes:
-        """Return the sizes of a member of that length that rises by ``rise``."""
-        slope = math.asin(min(1.0, abs(rise) / length)) if length > 0.0 else 0.0
-        if section is None:
-            return cls(length, slope, 0.0, 0.0, False)
-        fill = section.area / max(section.depth * section.width, 1e-12)
-        return cls(length, slope, section.depth, section.width, fill > 0.6)
-
-
-def excluded_by_role(entity: Any, hosts: Iterable[Any], rules: BeamRules) -> str:
-    """Return what an element is by its role where that is no beam, else ""."""
-    if not rules.judge_by_role:
+    def excluded(self, record: Record, hosts: Iterable[Any]) -> str:
+        """Return what an element is by its role where that is no beam, else ""."""
+        if not self._rules.judge_by_role:
+            return ""
+        named = _NOT_BEAMS.get(self._predefined_type(record))
+        if named:
+            return named
+        for host in hosts:
+            for ifc_class, name in _HOSTS.items():
+                if host.is_a(ifc_class):
+                    return f"part of {name}"
         return ""
-    named = _NOT_BEAMS.get(predefined_type(entity))
-    if named:
-        return named
-    for host in hosts:
-        for ifc_class, name in _HOSTS.items():
-            if host.is_a(ifc_class):
-                return f"part of {name}"
-    return ""
+
+    def _predefined_type(self, record: Record) -> str:
+        place = self._place_of_type.get(record.ifc_class)
+        if place is None:
+            entity = record.entity
+            names = [entity.attribute_name(i) for i in range(len(entity))]
+            place = names.index("PredefinedType") if "PredefinedType" in names else -1
+            self._place_of_type[record.ifc_class] = place
+        if place < 0:
+            return ""
+        value = record.entity.get_argument(place)
+        return value if isinstance(value, str) else ""
 
 
-def excluded_by_proportion(sizes: Sizes, rules: BeamRules) -> str:
+def excluded_by_proportion(length: float, section: Section | None, rules: BeamRules) -> str:
     """Return what an element is by its proportions where that is no beam, else "".
 
     Where the section is unknown only the length counts.
     """
-    if sizes.length < rules.least_length:
+    if length < rules.least_length:
         return f"shorter than {rules.least_length:g} m"
-    largest, smallest = max(sizes.depth, sizes.width), min(sizes.depth, sizes.width)
-    if largest <= 0.0:
+    if section is None or section.depth <= 0.0 or section.width <= 0.0:
         return ""
+    depth, width = section.depth, section.width
+    largest, smallest = max(depth, width), min(depth, width)
     if largest < rules.least_depth:
         return f"thinner than {rules.least_depth * 1e3:g} mm (rods, strips, anchors)"
-    if sizes.solid and smallest < rules.least_thickness:
+    solid = section.area > 0.6 * depth * width
+    if solid and smallest < rules.least_thickness:
         return f"a plate or strip thinner than {rules.least_thickness * 1e3:g} mm"
-    if sizes.length < rules.least_slenderness * largest:
+    if length < rules.least_slenderness * largest:
         return f"shorter than {rules.least_slenderness:g} times its depth or width"
-    if sizes.solid and sizes.depth > rules.panel_depth and sizes.depth > 4.0 * sizes.width:
+    if solid and depth > rules.panel_depth and depth > 4.0 * width:
         return f"a wall panel (solid, deeper than {rules.panel_depth:g} m)"
-    if sizes.solid and sizes.width > rules.slab_width and sizes.width > 4.0 * sizes.depth:
+    if solid and width > rules.slab_width and width > 4.0 * depth:
         return f"a slab strip (solid, wider than {rules.slab_width:g} m)"
     return ""
 
@@ -97,9 +99,3 @@ def carrier_label(reason: str) -> str:
     if reason.startswith("a slab strip"):
         return "slab strip"
     return ""
-
-
-def predefined_type(entity: Any) -> str:
-    """Return the PredefinedType of an element, "" where its schema or the file has none."""
-    value = getattr(entity, "PredefinedType", None)
-    return value if isinstance(value, str) and value != "NOTDEFINED" else ""

@@ -73,6 +73,11 @@ class SectionReader:
         self.profile(entity)
         return self._reasons.get(entity.id(), "")
 
+    @property
+    def noticed(self) -> bool:
+        """Whether anything was noticed about any profile so far."""
+        return bool(self._findings)
+
     def findings(self, entity: Any) -> tuple[Finding, ...]:
         """Return what was noticed about a profile; elements are not filled in."""
         self.profile(entity)
@@ -125,7 +130,8 @@ class SectionReader:
         stated = self._stated.get(entity.id())
         if stated:
             notes.extend(stated.compared(_name(entity) or entity.is_a(), profile.moments))
-        self._findings[entity.id()] = tuple(notes)
+        if notes:
+            self._findings[entity.id()] = tuple(notes)
         return profile
 
     def _profile_of(self, name: str, ifc_class: str, drawn: Drawn) -> Profile:

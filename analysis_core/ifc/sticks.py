@@ -27,7 +27,7 @@ _AXIS_REACH = 0.75  # an axis may be this much longer than the body at each end 
 
 
 class Stick(NamedTuple):
-    """Ends of the centroid line, the images of the profile's axes, the profile; local or world.
+    """Ends of the centroid line, the images of the profile's axes, and the profile.
 
     ``body_start`` and ``body_end`` are the ends of the body where the axis reaches further.
     ``offset`` is the distance between the drawn axis and the centroid line, 0 without axis.
@@ -51,21 +51,17 @@ class Stick(NamedTuple):
         """Distance between the ends."""
         return math.dist(self.start, self.end)
 
-    def moved(self, frame: Frame) -> Stick:
-        """Return the stick after ``frame`` was applied."""
-        return Stick(
-            frames.point(frame, *self.start),
-            frames.point(frame, *self.end),
-            frames.direction(frame, *self.x_axis),
-            frames.direction(frame, *self.y_axis),
-            self.profile,
-            self.entity,
-            self.end_profile,
-            self.end_entity,
-            frames.point(frame, *self.body_start) if self.body_start else None,
-            frames.point(frame, *self.body_end) if self.body_end else None,
-            self.offset,
-            self.remarks,
+    def reversed(self) -> Stick:
+        """Return the stick run the other way."""
+        if self.end_profile is None:
+            return self._replace(start=self.end, end=self.start)
+        return self._replace(
+            start=self.end,
+            end=self.start,
+            profile=self.end_profile,
+            entity=self.end_entity,
+            end_profile=self.profile,
+            end_entity=self.entity,
         )
 
 
@@ -91,7 +87,10 @@ def stick_of(shape: Shape) -> Stick:
         main.entity,
         main.end_profile,
         main.end_entity,
-        remarks=tuple(remarks),
+        None,
+        None,
+        0.0,
+        tuple(remarks),
     )
     return _aligned(stick, axis) if axis is not None else stick
 
@@ -125,25 +124,63 @@ def with_profile(stick: Stick, profile: Profile, entity: Any, cardinal_point: in
     )
 
 
-def section_matrix(stick: Stick, up: Vector) -> Matrix:
+class Lying(NamedTuple):
+    """A stick placed in the world: its ends, the direction of the section's z, and the matrix
+    from the profile's axes to the section's (y, z)."""
+
+    start: Vector
+    end: Vector
+    up: Vector
+    matrix: Matrix
+
+
+class Layer:
+    """Places sticks; the same profile lies in the same way over and over."""
+
+    def __init__(self) -> None:
+        self._known: dict[tuple[Vector, Vector, Vector, Vector], tuple[Vector, Matrix]] = {}
+
+    def lay(self, stick: Stick, frame: Frame) -> Lying:
+        """Return how a stick (in its element's coordinates) lies in the world."""
+        start, end = stick.start, stick.end
+        sx, sy, sz = start
+        dx, dy, dz = end[0] - sx, end[1] - sy, end[2] - sz
+        size = math.sqrt(dx * dx + dy * dy + dz * dz)
+        along = (dx / size, dy / size, dz / size)
+        # The frame is right-angled: the world's z, seen from inside, is its last row.
+        vertical = (frame[2], frame[5], frame[8])
+        key = (stick.x_axis, stick.y_axis, along, vertical)
+        known = self._known.get(key)
+        if known is None:
+            up = upright(along, vertical, stick.y_axis)
+            known = self._known[key] = (up, section_matrix(along, up, stick.x_axis, stick.y_axis))
+        up, matrix = known
+        return Lying(
+            frames.point(frame, sx, sy, sz),
+            frames.point(frame, *end),
+            frames.direction(frame, *up),
+            matrix,
+        )
+
+
+def section_matrix(along: Vector, up: Vector, x_axis: Vector, y_axis: Vector) -> Matrix:
     """Return the matrix from profile axes to (y, z) of the member, z along ``up``.
 
     x runs along the member, z along ``up`` and y completes the right-handed axes; the profile
     is projected along the member, so that oblique extrusions give the true cross-section.
     """
-    along = frames.unit(frames.minus(stick.end, stick.start))
     y = frames.cross(up, along)
     return (
-        (frames.dot(y, stick.x_axis), frames.dot(y, stick.y_axis)),
-        (frames.dot(up, stick.x_axis), frames.dot(up, stick.y_axis)),
+        (frames.dot(y, x_axis), frames.dot(y, y_axis)),
+        (frames.dot(up, x_axis), frames.dot(up, y_axis)),
     )
 
 
-def upright(start: Vector, end: Vector, depth_axis: Vector) -> Vector:
+def upright(along: Vector, vertical: Vector, depth_axis: Vector) -> Vector:
     """Return the unit vector across the member in its vertical plane; for a vertical member the
-    direction of the profile's depth."""
-    along = frames.unit(frames.minus(end, start))
-    towards = (0.0, 0.0, 1.0) if abs(along[2]) < 0.9999 else depth_axis
+    direction of the profile's depth.  ``along`` and ``vertical`` are unit vectors."""
+    rise = frames.dot(along, vertical)
+    towards = vertical if abs(rise) < 0.9999 else depth_axis
     up = frames.plus(towards, along, -frames.dot(towards, along))
     if frames.length(up) < 1e-6 * max(frames.length(towards), 1e-12):
         return frames.any_perpendicular(along)
@@ -191,40 +228,40 @@ def _stick_of_axis(axis: tuple[Vector, Vector] | None, shape: Shape) -> Stick:
 def _aligned(stick: Stick, axis: tuple[Vector, Vector]) -> Stick:
     """Take direction and extent from the axis and the position from the body."""
     first, last = axis
-    along = frames.unit(frames.minus(last, first))
-    body = frames.minus(stick.end, stick.start)
-    if frames.dot(along, body) < 0.0:
-        stick = _turned_round(stick)
-        body = frames.minus(stick.end, stick.start)
-    arm = frames.minus(frames.plus(stick.start, body, 0.5), first)
-    shift = frames.plus(arm, along, -frames.dot(arm, along))
-    if frames.dot(along, body) < PARALLEL * frames.length(body):
+    size = math.dist(first, last)
+    along = (
+        (last[0] - first[0]) / size,
+        (last[1] - first[1]) / size,
+        (last[2] - first[2]) / size,
+    )
+    if frames.dot(along, frames.minus(stick.end, stick.start)) < 0.0:
+        stick = stick.reversed()
+    start, end = frames.minus(stick.start, first), frames.minus(stick.end, first)
+    low, high = frames.dot(start, along), frames.dot(end, along)
+    shift = frames.plus(
+        (0.5 * (start[0] + end[0]), 0.5 * (start[1] + end[1]), 0.5 * (start[2] + end[2])),
+        along,
+        -0.5 * (low + high),
+    )
+    if high - low < PARALLEL * math.dist(stick.start, stick.end):
         remark = "its axis does not run along its body; the body was taken"
         return stick._replace(remarks=(*stick.remarks, remark))
-    low, high = (frames.dot(frames.minus(p, first), along) for p in (stick.start, stick.end))
-    size = math.dist(first, last)
     slack = max(_AXIS_REACH, 0.1 * (high - low))
     overlap = min(size, high) - max(0.0, low)
     if overlap < _AXIS_OVERLAP * (high - low) or max(abs(low), abs(high - size)) > slack:
         remark = "its axis and its body differ in extent; the body was taken"
         return stick._replace(offset=frames.length(shift), remarks=(*stick.remarks, remark))
-    return stick._replace(
-        start=frames.plus(first, shift),
-        end=frames.plus(last, shift),
-        body_start=stick.start,
-        body_end=stick.end,
-        offset=frames.length(shift),
-    )
-
-
-def _turned_round(stick: Stick) -> Stick:
-    if stick.end_profile is None:
-        return stick._replace(start=stick.end, end=stick.start)
-    return stick._replace(
-        start=stick.end,
-        end=stick.start,
-        profile=stick.end_profile,
-        entity=stick.end_entity,
-        end_profile=stick.profile,
-        end_entity=stick.entity,
+    return Stick(
+        frames.plus(first, shift),
+        frames.plus(last, shift),
+        stick.x_axis,
+        stick.y_axis,
+        stick.profile,
+        stick.entity,
+        stick.end_profile,
+        stick.end_entity,
+        stick.start,
+        stick.end,
+        frames.length(shift),
+        stick.remarks,
     )
