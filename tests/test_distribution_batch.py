@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import random
+from collections.abc import Callable
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -12,7 +14,7 @@ from analysis_core.distribution import solve, solve_lines
 from analysis_core.distribution.assembly import solve_any
 from analysis_core.distribution.direct import SpanStiffness, sweep, sweep_lines
 from analysis_core.distribution.plain_lines import read
-from analysis_core.errors import AnalysisError, MechanismError
+from analysis_core.errors import AnalysisError, MechanismError, ModelError
 from analysis_core.model import Line
 from analysis_core.results import LineSolution
 
@@ -119,3 +121,19 @@ def test_chunks_do_not_change_anything(monkeypatch: pytest.MonkeyPatch) -> None:
         if isinstance(other, LineSolution):
             assert isinstance(one, LineSolution)
             np.testing.assert_array_equal(one.end_moments, other.end_moments)
+
+
+@pytest.mark.parametrize("maker", [plain_line, beam_line])
+def test_no_cases_give_empty_results(maker: Callable[[int], Line]) -> None:
+    found = solve(maker(5003), [])
+
+    assert found.end_moments.shape[0] == 0
+    assert found.joint_residual == 0.0
+
+
+def test_a_line_with_a_fault_is_refused_with_its_reason() -> None:
+    faulty = replace(plain_line(5003), fault="It has no material.")
+
+    with pytest.raises(ModelError, match="It has no material"):
+        solve(faulty, ["q"])
+    assert isinstance(solve_lines([faulty], ["q"])[0], ModelError)
