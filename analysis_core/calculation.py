@@ -13,6 +13,7 @@ from analysis_core.record_rows import closing_note, record_tables
 from analysis_core.results import LineResult
 from analysis_core.settings import Settings
 from analysis_core.sheet.checks import NOTE, member_checks
+from analysis_core.sheet.details import deflections, redistribution, support_moments
 from analysis_core.sheet.distribution import distribution, fixed_ends
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.line_section import member_name
@@ -34,6 +35,23 @@ def distribution_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
         left = "; ".join(s.source for s in states[_MOST:])
         parts.append(tag("p", f"Not written down, for length: {left}.", class_="verification"))
     return [tag("h3", "Distribution of the governing states"), *parts] if parts else []
+
+
+def detail_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
+    """Return deflections against limits, moments at faces and redistribution of a line."""
+    if result.detail is None:
+        return []
+    detail = detail_of(result)
+    parts = []
+    if detail.deflections:
+        parts.append(deflections(detail.deflections, units))
+    if detail.supports:
+        parts.append(support_moments(detail.supports, units))
+    if detail.redistributed is not None:
+        names = [member_name(m) for m in result.line.members]
+        elastic = result.envelopes["strength"]
+        parts += redistribution(detail.redistributed, elastic, names, units)
+    return parts
 
 
 def check_parts(

@@ -261,7 +261,7 @@ def of_storeys(outcome: Outcome, storeys: Sequence[str]) -> Outcome:
 
 def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
-    from analysis_core.calculation import check_parts, distribution_parts
+    from analysis_core.calculation import check_parts, detail_parts, distribution_parts
     from analysis_core.sheet.document import sheet as write_sheet
 
     units = display_units(settings.display.system, settings.display.units)
@@ -271,7 +271,8 @@ def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
         return distribution_parts(result, units)
 
     def checks(result: LineResult) -> list[Markup]:
-        return check_parts(result, outcome.model, settings, units)
+        more = detail_parts(result, units)
+        return more + check_parts(result, outcome.model, settings, units)
 
     return write_sheet(
         outcome, units, title=settings.title, date=today, working=working, checks=checks

@@ -182,6 +182,7 @@ _SYSTEMS: dict[str, dict[str, tuple[str, int]]] = {
         "translational stiffness": ("kN/m", 0), "rotational stiffness": ("kN*m/rad", 0),
         "rotation": ("mrad", 3), "density": ("kg/m3", 0), "temperature difference": ("K", 1),
         "flexural rigidity": ("kN*m2", 0), "section modulus": ("cm3", 1), "warping": ("cm6", 0),
+        "reinforcement per length": ("mm2/m", 0),
     },
     "us": {
         "length": ("ft", 2), "deflection": ("in", 3), "force": ("kip", 2), "moment": ("kip*ft", 2),
@@ -190,6 +191,7 @@ _SYSTEMS: dict[str, dict[str, tuple[str, int]]] = {
         "translational stiffness": ("kip/in", 1), "rotational stiffness": ("kip*ft/rad", 0),
         "rotation": ("mrad", 3), "density": ("pcf", 0), "temperature difference": ("degF", 1),
         "flexural rigidity": ("kip*in2", 0), "section modulus": ("in3", 2), "warping": ("in6", 0),
+        "reinforcement per length": ("in2/ft", 3),
     },
 }  # fmt: skip
 
@@ -201,6 +203,7 @@ _DISPLAY_DIMENSIONS: dict[str, Dimension] = {
     "flexural rigidity": (1, 3, -2, 0, 0),
     "section modulus": (0, 3, 0, 0, 0),
     "warping": (0, 6, 0, 0, 0),
+    "reinforcement per length": _LENGTH,
 }
 
 

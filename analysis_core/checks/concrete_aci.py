@@ -122,10 +122,11 @@ def _shear(design: MemberDesign, f: Figures, fc: float) -> Check:
     steel = max(demand / f["phi_v"] - concrete, 0.0)
     least = max(0.75 * root, 50.0) * PSI * b / f["f_y"]
     if demand <= f["phi_v"] * f["lambda"] * root * PSI * b * d:
-        w.step("A_v/s", "", 0.0, "section length", "9.6.3.1", note="no stirrups required")
+        w.step("A_v/s", "", 0.0, "reinforcement per length", "9.6.3.1", note="no stirrups required")
     else:
         w.step("A_v/s", "V_s / (f_yt d) ≥ least", max(steel / (f["f_y"] * d), least),
-               "section length", "22.5.8.5.3, 9.6.3.4", note="stirrups per length")  # fmt: skip
+               "reinforcement per length", "22.5.8.5.3, 9.6.3.4",
+               note="stirrups per length")  # fmt: skip
     return w.check(
         "shear", "ACI 318-19, 22.5", demand=demand, resistance=most, quantity="force",
         x=design.governing.shear.x, source=design.governing.shear.source, not_covered=_NOT_COVERED,

@@ -203,14 +203,14 @@ def _shear(design: MemberDesign, f: Figures, fck: float) -> Check:
     )  # fmt: skip
     steepest = b * lever * nu * fcd / 2.0
     minimum = w.step("A_sw/s,min", "0.08 √f_ck / f_yk b_w",
-                     0.08 * math.sqrt(fck / 1e6) * 1e6 / f["f_yk"] * b, "section length",
+                     0.08 * math.sqrt(fck / 1e6) * 1e6 / f["f_yk"] * b, "reinforcement per length",
                      "9.2.2(5), (9.5N)", note="links per length")  # fmt: skip
     needed = max(demand / (lever * fyd * cot), minimum)
     w.step(
         "A_sw/s",
         "V_Ed / (z f_ywd cot θ)",
         needed,
-        "section length",
+        "reinforcement per length",
         "6.2.3(3), (6.8)",
         note="no links beyond the least" if demand <= concrete else "links per length required",
     )

@@ -1,0 +1,175 @@
+"""The calculation sheet: complete, self-contained, adding up, and safe with hostile names."""
+
+import re
+from dataclasses import replace
+from decimal import Decimal
+from html.parser import HTMLParser
+from pathlib import Path
+
+import pytest
+
+from analysis_core import pipeline
+from analysis_core.cli import main
+from analysis_core.job import load, parse
+
+SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
+MODEL = SAMPLES / "quarry_lane_physical_ifc4.ifc"
+JOB = load(SAMPLES / "quarry_lane.yaml")
+EMPTY = {"meta", "br", "line", "path", "rect", "circle", "polyline"}
+
+
+class Reader(HTMLParser):
+    """Tags in order, and tables as rows of (class of the row, texts of its cells)."""
+
+    def __init__(self, text):
+        super().__init__()
+        self.tags, self.open, self.tables, self.captions = [], [], [], []
+        self.attributes = []
+        self.feed(text)
+
+    def handle_starttag(self, tag, attrs):
+        attrs = dict(attrs)
+        self.tags.append(tag)
+        self.attributes.append((tag, attrs))
+        if tag not in EMPTY:
+            self.open.append(tag)
+        if tag == "table":
+            self.tables.append((attrs.get("class", ""), []))
+        if tag == "tr":
+            self.tables[-1][1].append((attrs.get("class", ""), []))
+        if tag in ("td", "th"):
+            self.tables[-1][1][-1][1].append("")
+
+    def handle_startendtag(self, tag, attrs):
+        self.tags.append(tag)
+        self.attributes.append((tag, dict(attrs)))
+
+    def handle_endtag(self, tag):
+        assert self.open.pop() == tag
+
+    def handle_data(self, data):
+        if "caption" in self.open:
+            self.captions.append(data)
+        if self.open and self.open[-1] in ("td", "th"):
+            self.tables[-1][1][-1][1][-1] += data
+
+
+@pytest.fixture(scope="module")
+def outcome():
+    return pipeline.run(MODEL, JOB)
+
+
+@pytest.fixture(scope="module")
+def text(outcome):
+    return pipeline.sheet(outcome, JOB, date="2026-01-01")
+
+
+@pytest.fixture(scope="module")
+def read(text):
+    return Reader(text)
+
+
+def test_every_line_has_its_drawings_tables_and_verification(outcome, text, read):
+    assert read.open == []
+    for result in outcome.lines:
+        assert f">{result.line.mark}, " in text
+    solved = len(outcome.lines)
+    assert text.count("Verification: largest unbalance") == solved
+    assert sum("Bearings" in c for c in read.captions) == solved
+    assert text.count('class="diagram"') == 3 * solved
+    assert "licensed engineer" in text.lower()
+
+
+def test_it_needs_no_network_and_no_script(text, read):
+    assert not {"script", "link", "img", "iframe", "object", "form"} & set(read.tags)
+    assert "http" not in text.replace("http://www.w3.org", "")
+    assert "url(" not in text
+    assert "@import" not in text
+
+
+def test_tables_and_drawings_can_be_read_without_seeing_them(read):
+    assert read.tags.count("caption") == read.tags.count("table")
+    assert read.tags.count("svg") == sum(
+        1 for tag, attrs in read.attributes if tag == "svg" and attrs.get("role") == "img"
+    )
+    assert ("html", {"lang": "en"}) in read.attributes
+    assert all(attrs.get("scope") for tag, attrs in read.attributes if tag == "th")
+
+
+def test_every_printed_sum_is_the_sum_of_the_printed_numbers(read):
+    seen = 0
+    for class_, rows in read.tables:
+        if class_ != "distribution":
+            continue
+        adding = {"held", "known", "balance", "carried"}
+        kinds = [kind for kind, _ in rows]
+        start = kinds.index("known") if "known" in kinds else kinds.index("held")
+        sums = [Decimal(0)] * (len(rows[0][1]) - 1)
+        for kind, cells in rows[start:]:
+            if kind in adding:
+                sums = [s + Decimal(c or "0") for s, c in zip(sums, cells[1:], strict=True)]
+        (printed,) = [cells[1:] for kind, cells in rows if kind == "sum"]
+        assert [Decimal(c) for c in printed] == sums
+        seen += 1
+    assert seen > 10
+
+
+def test_a_release_balances_the_joint_within_the_rounding_of_its_factors(read):
+    """What is balanced at a joint is minus its unbalance, as printed, to a unit per column."""
+    for class_, rows in read.tables:
+        if class_ != "distribution":
+            continue
+        for kind, cells in rows:
+            if kind != "balance":
+                continue
+            unbalance = Decimal(re.search(r"unbalance (-?[\d.]+)\)", cells[0])[1])
+            given = [Decimal(c) for c in cells[1:] if c]
+            symmetric = any("across the axis" in c for _, r in rows for c in r)
+            if not symmetric:
+                assert abs(sum(given) + unbalance) <= Decimal("0.01") * (len(given) + 1)
+
+
+def test_the_governing_distribution_ends_at_the_governing_moment(outcome, read):
+    """The exact row of a state that governs hogging holds the hogging moment of the envelope."""
+    first = outcome.lines[0].envelopes["strength"].members[0]
+    wanted = f"{first.hogging.value / 1e3:.2f}"
+    exact = [
+        cells for class_, rows in read.tables if class_ == "distribution"
+        for kind, cells in rows if kind == "exact"
+    ]  # fmt: skip
+    assert any(wanted in cells for cells in exact)
+
+
+def test_hostile_names_stay_text(outcome):
+    nasty = "<script>alert(1)</script>\"'&\u202e"
+    names = dict.fromkeys(outcome.model.names, nasty)
+    model = replace(outcome.model, names=names, title=nasty)
+
+    text = pipeline.sheet(replace(outcome, model=model, file=nasty), parse(""), date="x")
+
+    read = Reader(text)
+    assert "script" not in read.tags
+    assert "&lt;script&gt;" in text
+    assert "\u202e" not in text
+
+
+def test_one_storey_or_one_line_can_be_printed(tmp_path, capsys):
+    sheet = tmp_path / "roof.html"
+    arguments = ["sheet", str(MODEL), "--job", str(SAMPLES / "quarry_lane.yaml"), "-o", str(sheet)]
+
+    assert main([*arguments, "--storey", "Roof"]) == 0
+    roof = sheet.read_text(encoding="utf-8")
+    assert "ROOF-01, " in roof
+    assert "FF-01, First floor" not in roof
+    assert main([*arguments, "--storey", "Rof"]) == 2
+    assert "the nearest is 'Roof'" in capsys.readouterr().err
+
+
+def test_units_are_those_of_the_job_file():
+    job = load(SAMPLES / "quarry_lane_us.yaml")
+    us = pipeline.run(SAMPLES / "quarry_lane_physical_ifc4_inch.ifc", job)
+
+    text = pipeline.sheet(us, job, date="x")
+
+    assert "kip·ft" in text
+    assert "kN·m" not in text
