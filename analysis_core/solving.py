@@ -26,8 +26,9 @@ from analysis_core.effects.combinations import combine
 from analysis_core.effects.envelopes import envelopes
 from analysis_core.errors import AnalysisError, MechanismError
 from analysis_core.findings import Finding
-from analysis_core.fingerprints import basis, fingerprint
+from analysis_core.fingerprints import fingerprint
 from analysis_core.line_details import DetailInput, LineDetail, line_detail
+from analysis_core.line_fingerprints import line_bases
 from analysis_core.load_levels import levels
 from analysis_core.model import Action, Combination, Line, LineModel, PointForce, Transfer
 from analysis_core.results import LineEnvelope, LineResult, LineSolution, Verification
@@ -344,7 +345,7 @@ def _results(
         )
     for line in model.lines:
         results.setdefault(line.mark, LineResult(line, "not analysed"))
-    _add_fingerprints(model, rules, settings, solver, results)
+    _add_fingerprints(model, rules, settings, results)
     return tuple(results[line.mark] for line in model.lines)
 
 
@@ -393,38 +394,8 @@ def _rules_key(rules: Rules) -> Hashable:
 
 
 def _add_fingerprints(
-    model: LineModel,
-    rules: Rules,
-    settings: Settings,
-    solver: _Solver,
-    results: dict[str, LineResult],
+    model: LineModel, rules: Rules, settings: Settings, results: dict[str, LineResult]
 ) -> None:
-    """In the order of the load path, since a fingerprint holds those of what bears on the line.
-
-    Lines of a circle hold the fingerprints that the others have without the circle.
-    """
-    prints: dict[str, str] = {}
-
-    def of(mark: str) -> dict[str, str]:
-        received: dict[str, str] = {}
-        for t in solver.transfers_into(mark):
-            if t.from_line in prints:
-                place = f"joint {t.joint} at {t.position:.6f} m of member {t.member}"
-                known = received.setdefault(t.from_line, prints[t.from_line])
-                received[t.from_line] = f"{known}; {place}"
-        return basis(
-            solver.lines[mark],
-            combinations=rules.combinations,
-            rules=rules.name,
-            settings=settings,
-            received=received,
-        )
-
-    for level in levels([line.mark for line in model.lines], model.transfers):
-        for group in level:
-            if len(group) > 1:
-                prints.update({mark: fingerprint(of(mark)) for mark in group})
-            for mark in group:
-                found = of(mark)
-                results[mark] = replace(results[mark], basis=found, fingerprint=fingerprint(found))
-            prints.update({mark: results[mark].fingerprint for mark in group})
+    bases = line_bases(model, combinations=rules.combinations, rules=rules.name, settings=settings)
+    for mark, found in bases.items():
+        results[mark] = replace(results[mark], basis=found, fingerprint=fingerprint(found))
