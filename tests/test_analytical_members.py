@@ -391,6 +391,43 @@ def test_forces_on_a_varying_member_fall_on_the_part_where_they_act(tmp_path: Pa
     }  # fmt: skip
 
 
+def test_a_varying_member_is_attached_by_its_parts(tmp_path: Path) -> None:
+    made = AnalysisFile(continuous_beam([3.0, 5.0]))
+    parts = [made.by_name["M1"], made.by_name["M2"]]
+    whole = made.rooted(
+        "IfcStructuralCurveMemberVarying", "whole", PredefinedType="RIGID_JOINED_MEMBER"
+    )
+    made.relate("IfcRelAggregates", "parts", whole, parts)
+    for relation in made.file.by_type("IfcRelConnectsStructuralMember"):
+        if relation.RelatedStructuralConnection.Name == "J1" and relation.Name.startswith("M1"):
+            made.file.remove(relation)
+        else:
+            relation.RelatingStructuralMember = whole
+    building = read(made, tmp_path)
+    names = {x.global_id: x.name for x in (*building.members, *building.connections)}
+    found = {(names[a.member], names[a.connection], a.position) for a in building.attachments}
+    assert found == {("M1", "J0", 0.0), ("M1", "J1", 3.0), ("M2", "J1", 0.0), ("M2", "J2", 5.0)}
+
+
+@pytest.mark.parametrize("name", ["M2", "J2"])
+@pytest.mark.parametrize("global_id", ["as M1", "none"])
+def test_what_has_no_global_id_of_its_own_is_named_and_left_out(
+    tmp_path: Path, name: str, global_id: str
+) -> None:
+    made = AnalysisFile(continuous_beam([3.0, 5.0]))
+    other = made.by_name["M1" if name == "M2" else "J0"]
+    text = made.file.to_string()
+    own = f"'{made.by_name[name].GlobalId}'"
+    text = text.replace(own, f"'{other.GlobalId}'" if global_id == "as M1" else "$")
+    path = tmp_path / "t.ifc"
+    path.write_text(text)
+    building = read_analytical(open_model(path))
+    assert name not in {x.name for x in (*building.members, *building.connections)}
+    found = finding(building, "no-own-global-id")
+    assert found.severity == "error"
+    assert f"#{made.by_name[name].id()}" in found.message
+
+
 # -- the model -------------------------------------------------------------------------------
 
 

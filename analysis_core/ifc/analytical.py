@@ -89,7 +89,8 @@ class _Reader:
         )
         nodes = conditions.connections(self.file.by_type("IfcStructuralPointConnection"))
         relations = self.file.by_type("IfcRelConnectsStructuralMember")
-        attachments = conditions.attachments(relations, locals_, nodes, self.settings.tolerances)
+        targets = self._targets(locals_)
+        attachments = conditions.attachments(relations, targets, nodes, self.settings.tolerances)
         self._report_surfaces_and_edges(relations)
         actions = list(self.file.by_type("IfcStructuralAction"))
         groups = GroupReader(self.file, [action.id() for action in actions], self.notes)
@@ -97,7 +98,7 @@ class _Reader:
         placed = ActionReader(
             self.topology,
             self.source.units,
-            self._targets(locals_),
+            targets,
             nodes,
             self.settings.tolerances,
             self.notes,

@@ -22,6 +22,7 @@ from analysis_core.ifc.analytical_notes import (
     name_of,
     titled,
 )
+from analysis_core.ifc.analytical_targets import Target
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.frames import Frame, Vector
@@ -61,6 +62,7 @@ class ConditionReader:
         self._unknown: dict[str, list[str]] = {}
         self._seen: set[str] = set()
         self._lengths: list[str] = []
+        self._taken: dict[str, int] = {}
 
     def connections(self, entities: Any) -> dict[int, Node]:
         """Return the point connections by entity number."""
@@ -76,7 +78,7 @@ class ConditionReader:
         return nodes
 
     def attachments(
-        self, relations: Any, members: Mapping[int, Local], nodes: Mapping[int, Node],
+        self, relations: Any, members: Mapping[int, Target], nodes: Mapping[int, Node],
         tolerances: Tolerances,
     ) -> list[Attachment]:  # fmt: skip
         """Return where members are attached to point connections, in file order."""
@@ -86,26 +88,30 @@ class ConditionReader:
                 if relation[4] is None or relation[5] is None:
                     self._report_loose(relation)
                     continue
-                local, node = members.get(relation[4].id()), nodes.get(relation[5].id())
-                if local is None or node is None:
+                target, node = members.get(relation[4].id()), nodes.get(relation[5].id())
+                if target is None or node is None:
                     continue  # the missing one has its own finding
-                attachment = self._attachment(relation, local, node, tolerances)
+                attached = [
+                    self._attachment(relation, local, node, tolerances)
+                    for local in target.parts_at(node.connection.point)
+                ]
             except MALFORMED as error:
                 self._notes.malformed(relation, error)
                 continue
-            pair = attachment.member, attachment.connection
-            if pair in result:
-                self._report_twice(relation, attachment)
-            else:
-                result[pair] = attachment
-        attached = list(result.values())
-        attached += self._by_place(members, nodes, attached)
+            for attachment in attached:
+                pair = attachment.member, attachment.connection
+                if pair in result:
+                    self._report_twice(relation, attachment)
+                else:
+                    result[pair] = attachment
+        found = list(result.values())
+        found += self._by_place(members, nodes, found)
         self._report_unknown()
         self._report_lengths()
-        return attached
+        return found
 
     def _by_place(
-        self, members: Mapping[int, Local], nodes: Mapping[int, Node], attached: list[Attachment]
+        self, members: Mapping[int, Target], nodes: Mapping[int, Node], attached: list[Attachment]
     ) -> list[Attachment]:
         """Attach connections that no relation names to the members that end where they are."""
         related = {attachment.connection for attachment in attached}
@@ -113,7 +119,8 @@ class ConditionReader:
         if not loose:
             return []
         ends: dict[tuple[int, int, int], list[tuple[Local, float]]] = {}
-        for local in members.values():
+        singles = [target.first for target in members.values() if len(target.parts) == 1]
+        for local in singles:
             ends.setdefault(_cell(local.member.start), []).append((local, 0.0))
             ends.setdefault(_cell(local.member.end), []).append((local, local.length))
         result = []
@@ -136,6 +143,8 @@ class ConditionReader:
         return result
 
     def _node(self, entity: Any) -> Node | None:
+        if not self._notes.identified(entity, self._taken):
+            return None
         key = global_id(entity)
         frame = self._topology.frame(entity, self._shared.get(entity.id()))
         point = self._topology.point(entity, frame)

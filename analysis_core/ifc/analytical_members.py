@@ -59,6 +59,7 @@ class MemberReader:
         self._notes = notes
         self._assumed_up: list[str] = []
         self._axial_only: dict[str, list[str]] = {}
+        self._taken: dict[str, int] = {}
 
     def read(self, entities: Iterable[Any], varying: Mapping[int, Any]) -> dict[int, Local]:
         """Return the members that could be read, by entity number."""
@@ -82,6 +83,8 @@ class MemberReader:
         return members
 
     def _member(self, entity: Any) -> Local | None:
+        if not self._notes.identified(entity, self._taken):
+            return None
         key = global_id(entity)
         frame = self._topology.frame(entity, self._shared.get(entity.id()))
         ends = self._topology.straight(entity, frame)

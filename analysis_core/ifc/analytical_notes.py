@@ -34,6 +34,24 @@ class Notes:
         """Take over findings made elsewhere."""
         self._findings.update(dict.fromkeys(findings))
 
+    def identified(self, entity: Any, taken: dict[str, int]) -> bool:
+        """Whether an entity has a GlobalId of its own; noted if not, and then it is left out.
+
+        ``taken`` holds the GlobalIds met so far, and is added to.
+        """
+        key = global_id(entity)
+        if key and taken.setdefault(key, entity.id()) == entity.id():
+            return True
+        why = f"shares its GlobalId with #{taken[key]}" if key else "has no GlobalId"
+        self.add(
+            "error",
+            "no-own-global-id",
+            f"{titled(entity)} (#{entity.id()}) was left out: it {why}, so that nothing could be "
+            f"told apart or posted. Give it a GlobalId of its own.",
+            (key,),
+        )
+        return False
+
     def malformed(self, entity: Any, error: Exception) -> None:
         """Note an entity that was left out because its attributes make no sense."""
         reason = str(error).splitlines()[0][:120] if str(error) else type(error).__name__

@@ -12,6 +12,8 @@ from analysis_core.ifc.analytical_loads import Load
 from analysis_core.ifc.analytical_members import Local
 from analysis_core.ifc.frames import Frame, Vector
 
+_SAME_PLACE = 1e-3
+
 
 @dataclass(frozen=True, slots=True)
 class Target:
@@ -32,6 +34,18 @@ class Target:
         """Length of the whole, m."""
         last, offset = self.parts[-1]
         return offset + last.length
+
+    def parts_at(self, point: Vector) -> list[Local]:
+        """Return the part on which a point lies, or both where it lies between two."""
+        if len(self.parts) == 1:
+            return [self.first]
+        at = self.first.position_of(point)
+        found = [
+            part
+            for part, offset in self.parts
+            if offset - _SAME_PLACE <= at <= offset + part.length + _SAME_PLACE
+        ]
+        return found or [self.first if at < 0.0 else self.parts[-1][0]]
 
 
 def chained(parts: Sequence[Local]) -> Target | None:
