@@ -168,3 +168,16 @@ def test_the_ordinates_of_all_lines_come_in_the_order_of_their_members():
     assert found.upper[1, 0] == pytest.approx(demo.SUPPORT_MOMENT)
     assert found.upper[2, [0, 2]] == pytest.approx(-demo.LOAD_2 * demo.C**2 / 12.0)
     assert np.array_equal(found.upper, found.lower)
+
+
+def test_a_line_without_actions_and_results_is_still_drawn(result):
+    outcome = demo.outcome()
+    bare = replace(result, line=replace(result.line, actions=()), status="not analysed",
+                   solution=None, envelopes={})  # fmt: skip
+    nothing = replace(outcome, lines=(bare,), model=replace(outcome.model, cases=()))
+
+    (view,) = views_of(nothing)
+    drawing = lay_out(strip_of(bare, view, UNITS), 900.0, 400.0, UNITS)
+
+    assert any(spot.kind == "joint" for spot in drawing.spots)
+    assert any(words.text == "no action here" for words in drawing.words)

@@ -31,9 +31,10 @@ def draw():
     desk.sessions[doc.Name] = session
     desk._show_all(doc.Name)
     settle()
+    box = doc.BeamLines.ViewObject.Proxy.extent()
     picture_of_screen("demo_window")
     image = picture_of_view("demo_view")
     return {
         role: count_pixels(image, on_white(VIEW, role), 12)
         for role in ("line", "sagging", "hogging")
-    } | {"shown": desk.panels.list.model.shown()}
+    } | {"shown": desk.panels.list.model.shown(), "extent": box}

@@ -434,3 +434,31 @@ def language():
         "words": [w.text for w in canvas.drawing.words],
         "states": [model.data(model.index_of(0).siblingAtColumn(1))],
     }
+
+
+def every_model():
+    """Open each model in turn, look at every line and every view of it."""
+    desk = activate()
+    found = {}
+    for path in os.environ["SPANLEDGER_MODELS"].split(os.pathsep):
+        copy = PICTURES / "work" / Path(path).name
+        copy.parent.mkdir(exist_ok=True)
+        shutil.copy(path, copy)
+        desk.open_model(copy)
+        wait_until(lambda: not desk.runs.busy, 120.0, f"the run of {copy.name}")
+        if desk.solved is None:
+            found[copy.name] = desk.panels.running.message.text()
+            continue
+        wait_until(lambda: not desk.runs.busy_behind, 120.0, "the building")
+        views = widget(QtWidgets.QComboBox, "SpanledgerView")
+        count = len(desk.solved.outcome.lines)
+        for line in range(min(count, 12)):
+            desk.choose_line(line)
+            views.setCurrentIndex(line % max(views.count(), 1))
+            for kind in ("joint", "member", "action"):
+                spots = desk.panels.strip.canvas.drawing.spots
+                desk.choose_spot(next((s for s in spots if s.kind == kind), None))
+        settle(0.2)
+        picture_of_screen(f"model_{copy.stem}")
+        found[copy.name] = count
+    return found

@@ -1,5 +1,8 @@
 """The main job in the real window, by clicks."""
 
+import os
+from pathlib import Path
+
 import pytest
 
 pytestmark = pytest.mark.host
@@ -140,3 +143,18 @@ def test_the_desk_speaks_another_language(in_freecad):
     assert "3 Felder" in found["title"]
     assert "Querkraft" in found["words"]
     assert found["states"] == ["● ausgeglichen"]
+
+
+def test_every_sample_model_can_be_looked_at(in_freecad):
+    samples = sorted((Path(__file__).resolve().parents[2] / "sample_models").glob("*.ifc"))
+
+    found = in_freecad(
+        "scenes_model:every_model",
+        timeout=300.0,
+        SPANLEDGER_MODELS=os.pathsep.join(map(str, samples)),
+    )
+
+    log = found.pop("log")
+    assert set(found) == {path.name for path in samples}
+    assert all(count == 11 for count in found.values())
+    assert "Traceback" not in log

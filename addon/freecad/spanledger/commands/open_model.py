@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from ..guard import guarded
 from ..resources import icon
 from ..texts import QT_TRANSLATE_NOOP
 
@@ -26,4 +27,4 @@ class OpenModel:
     def Activated(self) -> None:  # noqa: N802
         from ..desk import the_desk
 
-        the_desk().ask_for_model()
+        guarded(the_desk().ask_for_model)

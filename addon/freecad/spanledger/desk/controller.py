@@ -259,6 +259,8 @@ class Desk(QtCore.QObject):
         self.panels.list.choose(line)
         if line is not None and self.solved is not None:
             self.panels.show_line(self.solved, line, self.spot)
+        else:
+            self.panels.show_no_line()
         self.link.show(line)
 
     def choose_spot(self, spot: Any) -> None:

@@ -111,6 +111,12 @@ class Panels:
         self.show_spot(session, line, spot)
         self.show_record(session, line)
 
+    def show_no_line(self) -> None:
+        """Show that no line is chosen."""
+        self.strip.show_strip(None, display_units())
+        self.strip.inspector.clear()
+        self.record.show_record("")
+
     def show_record(self, session: Session, line: int) -> None:
         """Show how the moments of a line were distributed, where that is looked at."""
         view = self.strip.current_view()
@@ -152,9 +158,7 @@ class Panels:
             self.tabs.removeTab(self.tabs.indexOf(self.changes))
         self.tabs.setTabText(1, translate("Spanledger", "Findings"))
         self.strip.show_views([])
-        self.strip.show_strip(None, units)
-        self.strip.inspector.clear()
-        self.record.show_record("")
+        self.show_no_line()
 
 
 def _before(session: Session, mark: str) -> Any:

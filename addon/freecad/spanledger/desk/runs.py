@@ -7,6 +7,7 @@ from typing import Any
 
 import FreeCAD
 
+from ..guard import guarded
 from ..qt import QtCore
 from ..texts import translate
 from ..worker import Work
@@ -40,7 +41,7 @@ class Runs(QtCore.QObject):
             return
         work = Work(task, self)
         work.progressed.connect(self._bar.show_progress)
-        work.succeeded.connect(done)
+        work.succeeded.connect(lambda result: guarded(lambda: done(result)))
         work.failed.connect(self._tell)
         work.cancelled.connect(
             lambda: self._tell(translate("Spanledger", "Stopped; nothing was changed."))
@@ -54,7 +55,7 @@ class Runs(QtCore.QObject):
         """Run something that nobody waits for; a failure is only logged."""
         self.cancel_behind()
         work = Work(task, self)
-        work.succeeded.connect(done)
+        work.succeeded.connect(lambda result: guarded(lambda: done(result)))
         work.failed.connect(lambda message: FreeCAD.Console.PrintLog(message + "\n"))
         self._behind = work
         work.start()

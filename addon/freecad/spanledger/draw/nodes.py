@@ -45,6 +45,7 @@ class Lines:
             colour, width, self._lines, nearer=nearer, pickable=pickable, pattern=pattern
         )
         self.node.addChild(stroke)
+        self.set_segments(np.zeros((0, 2, 3)))  # Coin starts with a point at the origin
 
     def set_segments(self, ends: np.ndarray) -> None:
         """Draw straight segments (n, 2, 3)."""
@@ -81,6 +82,7 @@ class Faces:
         ):  # fmt: skip
             self.node.addChild(node)
         self.set_colour(colour)
+        self.clear()
 
     def set_colour(self, colour: Colour) -> None:
         """Show faces and outline in another colour."""
@@ -125,6 +127,12 @@ class Body:
         style.lineWidth = 1.0
         for node in (thin, style, self._edges):
             self.node.addChild(node)
+        self.clear()
+
+    def clear(self) -> None:
+        """Show nothing."""
+        none = np.zeros((0, 3))
+        self.set(none, none.astype(np.int32), np.zeros((0, 2), dtype=np.int32))
 
     def set(self, points: np.ndarray, triangles: np.ndarray, edges: np.ndarray) -> None:
         """Show triangles (t, 3) and edges (e, 2) between points (n, 3)."""

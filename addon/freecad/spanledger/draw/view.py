@@ -62,6 +62,7 @@ class BeamLinesView:
             full.addChild(faces.node)
         for root in (plain, full):
             root.addChild(self.building.node)
+        self.root = full
         view_object.addDisplayMode(plain, LINES)
         view_object.addDisplayMode(full, DIAGRAMS)
         self.fill(view_object.Object)
@@ -95,8 +96,7 @@ class BeamLinesView:
     def show_building(self, shape: Any) -> None:
         """Show the bodies of the building faintly; None shows none."""
         if shape is None:
-            none = np.zeros((0, 3))
-            self.building.set(none, none.astype(np.int32), np.zeros((0, 2), dtype=np.int32))
+            self.building.clear()
         else:
             points = 1000.0 * shape.points - np.array(self.scene.origin)
             self.building.set(points, shape.triangles, shape.edges)
@@ -135,6 +135,13 @@ class BeamLinesView:
         window = view.getViewer().getSoRenderManager()
         window.getCamera().viewBoundingBox(box, window.getViewportRegion().getViewportAspectRatio(),
                                            1.0)  # fmt: skip
+
+    def extent(self) -> tuple[tuple[float, ...], tuple[float, ...]]:
+        """Return the lowest and highest corner (mm) of all that is drawn."""
+        action = coin.SoGetBoundingBoxAction(coin.SbViewportRegion(100, 100))
+        action.apply(self.root)
+        box = action.getBoundingBox()
+        return tuple(box.getMin().getValue()), tuple(box.getMax().getValue())
 
     def updateData(self, obj: Any, name: str) -> None:  # noqa: N802  # FreeCAD's name
         if getattr(self, "scene", None) is None:

@@ -56,7 +56,10 @@ class Ordinates:
 
 
 def views_of(outcome: Outcome) -> list[View]:
-    """Return what can be looked at: envelopes first, then combinations, then cases."""
+    """Return what can be looked at: envelopes first, then combinations, then cases.
+
+    Where there is nothing at all, one view of nothing, so that lines can still be looked at.
+    """
     limit_states = [
         name for name in LIMIT_STATES if any(name in result.envelopes for result in outcome.lines)
     ]
@@ -65,7 +68,7 @@ def views_of(outcome: Outcome) -> list[View]:
         View("combination", c.name, tuple(c.factors.items())) for c in outcome.model.combinations
     ]
     views += [View("case", case.name, ((case.name, 1.0),)) for case in outcome.model.cases]
-    return views
+    return views or [View("case", say("nothing acts"))]
 
 
 def view_envelopes(
@@ -80,7 +83,11 @@ def view_envelopes(
     from analysis_core.effects.arrangements import whole_cases
     from analysis_core.effects.envelopes import envelopes  # late: start-up of the workbench
 
-    known = [i for i, result in enumerate(results) if result.solution is not None]
+    known = [
+        i
+        for i, result in enumerate(results)
+        if result.solution is not None and view.factors and result.solution.cases
+    ]
     solutions = [results[i].solution for i in known]
     found: list[LineEnvelope | None] = [None] * len(results)
     if known:

@@ -111,8 +111,8 @@ def _member_sets(
     sets = [PostedSet(element, "Spanledger_Effects", tuple(values))]
     if effects.curves:
         curves = tuple(
-            (name, say("{count} positions", count=len(curve.positions)))
-            for name, curve in effects.curves.items()
+            (curve.name, say("{count} positions", count=len(curve.positions)))
+            for curve in effects.curves
         )
         sets.append(PostedSet(element, "Spanledger_Diagrams", curves))
     record = (

@@ -836,6 +836,10 @@
       <translation>Hinweis</translation>
     </message>
     <message>
+      <source>nothing acts</source>
+      <translation>nichts wirkt</translation>
+    </message>
+    <message>
       <source>other</source>
       <translation>sonstige</translation>
     </message>
