@@ -12,7 +12,7 @@ does is halved until none is left that could hold the largest value.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -31,6 +31,7 @@ from analysis_core.effects.survey import EQUAL, Stretches
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 
+_ROUNDING = 1e-14  # of a part's own size: less does not make it change sign
 _POLISH = 4  # steps of Newton's from six digits to all
 _NEAR = 1e-4
 _HALVINGS = 60  # the margin falls by four with each: far more than ever needed
@@ -65,20 +66,21 @@ def largest(coefficients: Floats, cuts: Floats, table: FactorTable, stretches: S
     ``coefficients`` (P, K, C, B) of an effect, ``cuts`` (K+1, B); ``stretches`` are those that can
     hold it.  Of equal values the first row counts, then the leftmost place.
     """
-    by_part = np.ascontiguousarray(coefficients.transpose(1, 3, 0, 2))  # (K, B, P, C)
+    _, segments, count, size = coefficients.shape
+    by_part = coefficients.transpose(0, 2, 1, 3).reshape(-1, count, segments * size)
     find = _fixed if table.fixed else _varied
-    found = find(by_part, table, stretches)
-    row, segment, t = _first(found, coefficients.shape[3])
-    members = np.arange(coefficients.shape[3])
-    chosen = by_part[segment, members].swapaxes(0, 1)  # (P, B, C)
-    contributions = evaluate(chosen, t[:, None])
-    factors = np.where(contributions > 0.0, table.high[row], table.low[row])
+    found = find(by_part, size, table, stretches)
+    row, segment, t = _first(found, size)
+    members = np.arange(size)
+    chosen = by_part[..., segment * size + members]  # (P, C, B)
+    contributions = evaluate(chosen, t)
+    factors = np.where(contributions > 0.0, table.high.T[:, row], table.low.T[:, row])
     value, t = _settled(_weighted(chosen, factors), t)
     return Peaks(
         value=value,
         x=cuts[segment, members] + t * np.diff(cuts, axis=0)[segment, members],
         row=row,
-        contributions=contributions.T,
+        contributions=contributions,
     )
 
 
@@ -110,16 +112,15 @@ class _Found:
     value: Floats
 
 
-def _fixed(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
+def _fixed(by_part: Floats, size: int, table: FactorTable, s: Stretches) -> _Found:
     """Each row is one polynomial per segment."""
-    chosen = by_part[s.segment, s.member].swapaxes(0, 1)  # (P, n, C)
-    value, t = largest_between(_weighted(chosen, table.high[s.row]), s.low, s.high)
+    chosen = by_part[..., s.segment * size + s.member]  # (P, C, n)
+    value, t = largest_between(_weighted(chosen, table.high.T[:, s.row]), s.low, s.high)
     return _Found(s.member, s.row, s.segment, t, value)
 
 
-def _varied(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
+def _varied(by_part: Floats, size: int, table: FactorTable, s: Stretches) -> _Found:
     """Each row is the sum of its adverse parts, on ever smaller stretches."""
-    size = by_part.shape[1]
     best, scale = np.full(size, -np.inf), np.zeros(size)
     pieces: list[_Found] = []
 
@@ -128,19 +129,21 @@ def _varied(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
         np.maximum.at(best, where.member, value)
         np.maximum.at(scale, where.member, np.abs(value))
 
-    for _ in range(_HALVINGS):
-        chosen = by_part[s.segment, s.member].swapaxes(0, 1)  # (P, n, C)
-        local = restricted(chosen, s.low[:, None], s.high[:, None])
-        lows, highs = table.low[s.row], table.high[s.row]
-        sign, settled = _signs(local, lows, highs)
-        factors = np.where(sign > 0.0, highs, lows)[settled]
-        one = np.ones(len(factors))
-        value, u = largest_between(_weighted(local[:, settled], factors), 0.0 * one, one)
+    s = _plain(by_part, size, table, s, found)
+    for _ in range(_HALVINGS if len(s.row) else 0):
+        chosen = by_part[..., s.segment * size + s.member]  # (P, C, n)
+        local = restricted(chosen, s.low, s.high)
+        lows, highs = table.low.T[:, s.row], table.high.T[:, s.row]
+        rounding = _ROUNDING * np.max(np.abs(chosen), axis=0)
+        sign, settled = _signs(local, rounding, lows, highs)
+        factors = np.where(sign > 0.0, highs, lows)[:, settled]
         done, rest = _only(s, settled), ~settled
+        one = np.ones(len(done.row))
+        value, u = largest_between(_weighted(local[..., settled], factors), 0.0 * one, one)
         found(done, done.low + u * (done.high - done.low), value)
         if not rest.any():
             break
-        s, local, lows, highs = _only(s, rest), local[:, rest], lows[rest], highs[rest]
+        s, local, lows, highs = _only(s, rest), local[..., rest], lows[:, rest], highs[:, rest]
         ends = [_adverse(evaluate(local, u), lows, highs) for u in (0.0, 0.5, 1.0)]
         found(s, s.low, ends[0])
         found(s, 0.5 * (s.low + s.high), ends[1])
@@ -159,6 +162,35 @@ def _varied(by_part: Floats, table: FactorTable, s: Stretches) -> _Found:
             for name in ("member", "row", "segment", "t", "value")
         )
     )
+
+
+def _plain(
+    by_part: Floats,
+    size: int,
+    table: FactorTable,
+    s: Stretches,
+    found: Callable[[Stretches, Floats, Floats], None],
+) -> Stretches:
+    """Settle the stretches on which no part can change sign; return the others.
+
+    A part cannot where its values at both ends are of one sign and larger than what its second
+    derivative could take away between them.
+    """
+    chosen = by_part[..., s.segment * size + s.member]  # (P, C, n)
+    lows, highs = table.low.T[:, s.row], table.high.T[:, s.row]
+    at_low, at_high = (evaluate(chosen, t) for t in (s.low, s.high))
+    powers = np.arange(len(chosen), dtype=np.float64)
+    weights = (powers * (powers - 1.0)).reshape(-1, 1, 1)
+    bend = np.sum(np.abs(chosen[2:]) * weights[2:], axis=0)
+    sag = bend * ((s.high - s.low) ** 2 / 8.0)
+    apart = np.minimum(np.abs(at_low), np.abs(at_high)) >= sag
+    one_sign = apart & (np.signbit(at_low) == np.signbit(at_high))
+    settled = np.all(one_sign | (lows == highs), axis=0)
+    factors = np.where(at_low + at_high > 0.0, highs, lows)[:, settled]
+    done = _only(s, settled)
+    value, t = largest_between(_weighted(chosen[..., settled], factors), done.low, done.high)
+    found(done, t, value)
+    return _only(s, ~settled)
 
 
 def _only(s: Stretches, chosen: NDArray[np.bool_]) -> Stretches:
@@ -181,27 +213,28 @@ def _halved(s: Stretches) -> Stretches:
 def _margin(local: Floats, low: Floats, high: Floats) -> Floats:
     """How far each row may exceed its values at the ends of its stretch (n)."""
     if len(local) < 3:
-        return np.zeros(local.shape[1])
+        return np.zeros(local.shape[2])
     powers = np.arange(len(local), dtype=np.float64)
     bend = np.sum(np.abs(local) * (powers * (powers - 1.0)).reshape(-1, 1, 1), axis=0)
-    return np.asarray(np.sum(bend * np.maximum(np.abs(low), np.abs(high)), axis=1) / 8.0)
+    return np.asarray(np.sum(bend * np.maximum(np.abs(low), np.abs(high)), axis=0) / 8.0)
 
 
-def _signs(local: Floats, low: Floats, high: Floats) -> tuple[Floats, NDArray[np.bool_]]:
+def _signs(
+    local: Floats, rounding: Floats, low: Floats, high: Floats
+) -> tuple[Floats, NDArray[np.bool_]]:
     """The sign of each part on its interval, and the intervals on which every choice is settled."""
-    enclosing = bernstein(local)  # (P, n, C)
-    slack = 1e-14 * np.max(np.abs(enclosing), axis=0)
-    one_sign = np.all(enclosing >= -slack, axis=0) | np.all(enclosing <= slack, axis=0)
-    return np.sum(enclosing, axis=0), np.all(one_sign | (low == high), axis=1)
+    enclosing = bernstein(local)  # (P, C, n)
+    one_sign = np.all(enclosing >= -rounding, axis=0) | np.all(enclosing <= rounding, axis=0)
+    return np.sum(enclosing, axis=0), np.all(one_sign | (low == high), axis=0)
 
 
 def _adverse(effects: Floats, low: Floats, high: Floats) -> Floats:
-    return np.asarray(np.sum(np.maximum(low * effects, high * effects), axis=1))
+    return np.asarray(np.sum(np.maximum(low * effects, high * effects), axis=0))
 
 
 def _weighted(chosen: Floats, factors: Floats) -> Floats:
-    """The sum over the parts of (P, n, C) by factors (n, C): (P, n)."""
-    return np.asarray(np.sum(chosen * factors, axis=2))
+    """The sum over the parts of (P, C, n) by factors (C, n): (P, n)."""
+    return np.asarray(np.add.reduce(chosen * factors, axis=1))
 
 
 def _first(found: _Found, size: int) -> tuple[Integers, Integers, Floats]:
