@@ -395,6 +395,14 @@ def test_the_same_number_twice_is_refused(path: Path) -> None:
     assert "same number" in message
 
 
+def test_numbers_may_be_large_but_not_beyond_all_bounds(path: Path) -> None:
+    pair = "#{0}=IFCPERSON($,'x',$,$,$,$,$,$);\n#7=IFCPERSONANDORGANIZATION(#{0},#{1},$);\n"
+    source = opened(path, small(data=pair.format(2147483647, 2147483646)))
+    assert source.file.by_id(2147483647).FamilyName == "x"
+    assert "#2147483646" in source.findings[0].message
+    assert "#2147483648" in refusal(path, small(data=pair.format(2147483648, 1)))
+
+
 def test_two_models_in_one_file_are_refused(path: Path) -> None:
     assert "two models in one file" in refusal(path, small() + small())
 

@@ -119,8 +119,12 @@ class _Reader:
             combinations=tuple(combinations),
             findings=self.notes.findings,
             storeys=self._storeys(),
-            counts={name: len(self.file.by_type(name)) for name in _COUNTED},
+            counts=self._counts(),
         )
+
+    def _counts(self) -> dict[str, int]:
+        counts = {name: len(self.file.by_type(name)) for name in _COUNTED}
+        return counts | {"IfcStructuralAnalysisModel": len(self.models)}
 
     def _shared_placements(self) -> dict[int, Any]:
         """Return the placement that an item without its own takes from its model (IFC4 on)."""

@@ -22,6 +22,7 @@ _START = b"ISO-10303-21;"
 _KEYWORD = re.compile(rb";\s*(HEADER|ENDSEC|DATA|ANCHOR|REFERENCE|END-ISO-10303-21)(?=\s*[;(])")
 _INSTANCE = re.compile(rb"#\s*(\d+)\s*=")
 _TABLE_LIMIT = 100_000_000
+_LARGEST_NUMBER = 2**31 - 1
 _EXPORT_AGAIN = "Copy or export it again."
 
 
@@ -211,6 +212,12 @@ def _missing(ids: Ints, references: Ints) -> Ints:
 
 
 def _check_numbers(ids: Ints, name: str) -> None:
+    top = int(ids.max(initial=0))
+    if top > _LARGEST_NUMBER:
+        raise IfcReadError(
+            f"'{name}' holds an entity numbered #{top}; numbers above {_LARGEST_NUMBER:,} cannot "
+            f"be read. Export the model again, or have its entities renumbered."
+        )
     if ids.size < 2 or (np.diff(ids) > 0).all():
         return
     values, counts = np.unique(ids, return_counts=True)
