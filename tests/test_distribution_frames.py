@@ -244,6 +244,47 @@ def test_a_hinged_span_is_settled_by_statics_whatever_its_stiffness(ratio: float
     assert len(reduce(gerber(ratio)).bars) == 2
 
 
+def test_a_suspended_span_hangs_between_two_cantilevers() -> None:
+    # Symmetric halves would hide swapped ends: cantilevers of 1 m and 2 m, a suspended part of
+    # 3 m in two members under a force P where they meet, 2 m from the left hinge.
+    force, rigidity = 6e3, 1e6
+    line = Line(
+        "suspended",
+        (
+            Joint(0, 0.0, 0.0, support=FIXED),
+            Joint(1, 1.0, 0.0),
+            Joint(2, 3.0, 0.0),
+            Joint(3, 4.0, 0.0),
+            Joint(4, 6.0, 0.0, support=FIXED),
+        ),
+        (
+            Member(0, 0, 1, (Piece(1.0, (rigidity,)),), end_spring=FREE),
+            Member(1, 1, 2, (Piece(2.0, (rigidity,)),)),
+            Member(2, 2, 3, (Piece(1.0, (rigidity,)),), end_spring=FREE),
+            Member(3, 3, 4, (Piece(2.0, (rigidity,)),)),
+        ),
+        (JointForce("G", 2, vertical=force),),
+    )
+
+    solution = solve(line, ["G"])
+
+    assert len(reduce(line).bars) == 1
+    left, right = force / 3.0, 2.0 * force / 3.0
+    np.testing.assert_allclose(solution.end_moments[0, 0], [-left, 0.0], rtol=1e-13)
+    np.testing.assert_allclose(solution.end_moments[0, 3], [0.0, 2.0 * right], rtol=1e-13)
+    falls = left / 3.0 / rigidity, right * 8.0 / 3.0 / rigidity
+    own = force * 2.0**2 * 1.0**2 / (3.0 * rigidity * 3.0)  # P a² b²/(3 EI l)
+    np.testing.assert_allclose(
+        solution.displacements[0, 1:4, 1],
+        [falls[0], falls[0] + (falls[1] - falls[0]) * 2.0 / 3.0 + own, falls[1]],
+        rtol=1e-12,
+    )
+    # Slope under the force: that of the chord plus P a b (b - a)/(3 EI l).
+    chord = (falls[1] - falls[0]) / 3.0
+    turn = chord + force * 2.0 * 1.0 * (1.0 - 2.0) / (3.0 * rigidity * 3.0)
+    assert solution.rotations[0, 2] == pytest.approx(turn, rel=1e-12)
+
+
 def test_a_change_of_section_in_a_span_is_no_joint_to_release() -> None:
     parts = Line(
         "parts",

@@ -182,6 +182,29 @@ def test_a_joint_on_the_axis_is_fixed_or_free_by_symmetry() -> None:
         np.testing.assert_allclose(record.end_moments, record.exact, atol=1e-10)
 
 
+def test_a_joint_on_the_axis_with_a_spring_turns_under_antisymmetric_load() -> None:
+    line = beam(
+        [(5.0, 2e6), (7.0, 3e6), (7.0, 3e6), (5.0, 2e6)],
+        [FIXED, PINNED, Support(RIGID, rotation=2e6), PINNED, FIXED],
+        uniform(1, 7.0, 8e3),
+        uniform(2, 7.0, -8e3),
+    )
+    record = distribute(line, "G", stop=1e-9)
+    table = record.tables[0]
+
+    assert table.parity == "antisymmetric"
+    # Its left column stands for both: 4EI/L twice, and the spring.
+    middle = next(e for e in table.ends if e.joint == 2 and e.bar is not None)
+    assert middle.weight == 2.0
+    assert middle.factor == pytest.approx((12e6 / 7) / (24e6 / 7 + 2e6))
+    # Half of what joint 1 takes arrives there, from both sides.
+    at_1 = next(row for row in table.rows if row.joints == (1,))
+    carried = next(m for column, to, m in at_1.carried if table.ends[to].joint == 2)
+    after = next(row for row in table.rows[table.rows.index(at_1) + 1 :] if row.joints == (2,))
+    assert dict(after.unbalance)[2] == pytest.approx(2.0 * carried, rel=1e-9)
+    np.testing.assert_allclose(record.end_moments, record.exact, atol=1e-4)
+
+
 def test_unlike_supports_are_not_symmetric() -> None:
     line = beam([(5.0, 2e6)], [PINNED, FIXED], uniform(0, 5.0, 8e3))
 
