@@ -250,3 +250,5 @@ class Building:
     """Name and elevation (m, world) of each storey, lowest first."""
     counts: Mapping[str, int] = field(default_factory=dict)
     """What the file holds by class, for the survey."""
+    known_marks: Mapping[str, str] = field(default_factory=dict)
+    """Marks that lines had in an earlier run, by the GlobalIds of their elements."""

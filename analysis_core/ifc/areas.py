@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from contextlib import suppress
 from typing import Any, NamedTuple
 
 import numpy as np
@@ -29,17 +30,16 @@ class _Plan(NamedTuple):
 
 
 class AreaReader:
-    """Reads areas; the openings of the file are related to their hosts once."""
+    """Reads areas; ``openings`` lists those of each host by its entity number."""
 
     def __init__(self, elements: Elements, extents: ExtentReader, notes: Notes) -> None:
         self._elements = elements
         self._extents = extents
         self._notes = notes
-        self._openings: dict[int, list[Any]] = {}
+        self.openings: dict[int, list[Any]] = {}
         for relation in elements.of_class("IfcRelVoidsElement") or ():
-            host, opening = relation[4], relation[5]
-            if host is not None and opening is not None:
-                self._openings.setdefault(host.id(), []).append(opening)
+            with suppress(*READ_ERRORS):
+                self.openings.setdefault(relation[4].id(), []).append(relation[5])
 
     def area(
         self, record: Record, items: Sequence[Item], frame: Frame, extent: Extent
@@ -78,7 +78,7 @@ class AreaReader:
 
     def _opening_rings(self, record: Record, plan: _Plan, extent: Extent) -> list[Floats]:
         rings: list[Floats] = []
-        for opening in self._openings.get(record.id, ()):
+        for opening in self.openings.get(record.id, ()):
             try:
                 hole_record = Record.of(opening)
                 frame = self._elements.frame(hole_record)

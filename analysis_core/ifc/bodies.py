@@ -4,12 +4,13 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable
+from itertools import pairwise
 from typing import Any
 
 import numpy as np
 
 from analysis_core.ifc import frames, outline
-from analysis_core.ifc.body_items import NOTHING, Curved, Cut, Item, Mesh, Prism, Shape
+from analysis_core.ifc.body_items import NOTHING, Curved, Cut, Item, Mesh, Prism, Shape, together
 from analysis_core.ifc.curves import read_path
 from analysis_core.ifc.drawn import Drawn
 from analysis_core.ifc.face_gatherer import FaceGatherer
@@ -46,6 +47,10 @@ class BodyReader:
             "IfcCsgSolid": lambda item, depth: self._item(item[0], depth + 1),
             "IfcBlock": self._block,
             "IfcRightCircularCylinder": self._cylinder,
+            "IfcRightCircularCone": self._cone,
+            "IfcRectangularPyramid": self._pyramid,
+            "IfcGeometricSet": self._set,
+            "IfcCurveBoundedPlane": self._bounded_plane,
             "IfcFacetedBrep": self._brep,
             "IfcFacetedBrepWithVoids": self._brep,
             "IfcManifoldSolidBrep": self._brep,
@@ -247,6 +252,38 @@ class BodyReader:
         frame = self._placements.axes(item[0])
         vector = frames.direction(frame, 0.0, 0.0, height)
         return (Prism(_disk_profile(radius, 0.0), frame, vector),)
+
+    def _cone(self, item: Any, depth: int) -> Iterable[Item]:
+        height, radius = item[1] * self._length, item[2] * self._length
+        turns = np.linspace(0.0, 2.0 * math.pi, 24, endpoint=False)
+        ring = radius * np.column_stack([np.cos(turns), np.sin(turns), 0.0 * turns])
+        return self._spire(item, ring, height)
+
+    def _pyramid(self, item: Any, depth: int) -> Iterable[Item]:
+        x, y, height = (item[i] * self._length for i in (1, 2, 3))
+        base = np.array([(0.0, 0.0, 0.0), (x, 0.0, 0.0), (x, y, 0.0), (0.0, y, 0.0)])
+        return self._spire(item, base, height)
+
+    def _spire(self, item: Any, base: Floats, height: float) -> Iterable[Item]:
+        tip = base.mean(axis=0) + np.array([0.0, 0.0, height])
+        count = len(base)
+        sides = tuple(((i, (i + 1) % count, count),) for i in range(count))
+        bottom = (tuple(range(count - 1, -1, -1)),)
+        points = frames.images(self._placements.axes(item[0]), np.vstack([base, tip]))
+        return (Mesh(points, (bottom, *sides), item.is_a()),)
+
+    def _set(self, item: Any, depth: int) -> Iterable[Item]:
+        parts = [part for inner in item[0] for part in self._item(inner, depth + 1)]
+        surfaces = [part for part in parts if isinstance(part, Mesh)]
+        return (together(surfaces),) if surfaces else parts
+
+    def _bounded_plane(self, item: Any, depth: int) -> Iterable[Item]:
+        frame = self._placements.axes(item[0][0])
+        rings = [sampled(read_path(curve, self._measures)) for curve in (item[1], *item[2])]
+        rings = [frames.images(frame, in_space(ring[:-1, :2])) for ring in rings]
+        stops = np.cumsum([0, *(len(ring) for ring in rings)]).tolist()
+        loops = tuple(tuple(range(a, b)) for a, b in pairwise(stops))
+        return (Mesh(np.vstack(rings), (loops,), item.is_a()),)
 
     def _disk(self, item: Any, depth: int) -> Iterable[Item]:
         points = in_space(sampled(read_path(item[0], self._measures)))

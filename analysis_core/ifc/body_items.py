@@ -7,7 +7,10 @@ with faces is a *mesh*.  Anything swept along a curve or an angle is *curved*.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any, NamedTuple
+
+import numpy as np
 
 from analysis_core.ifc import frames
 from analysis_core.ifc.frames import Frame, Vector
@@ -108,3 +111,15 @@ class Shape(NamedTuple):
 
 
 NOTHING = Shape()
+
+
+def together(meshes: Sequence[Mesh]) -> Mesh:
+    """Return several meshes as one."""
+    points: list[Floats] = []
+    faces: list[tuple[tuple[int, ...], ...]] = []
+    count = 0
+    for mesh in meshes:
+        points.append(mesh.points)
+        faces += [tuple(tuple(i + count for i in loop) for loop in face) for face in mesh.faces]
+        count += len(mesh.points)
+    return Mesh(np.vstack(points), tuple(faces), meshes[0].ifc_class)

@@ -10,7 +10,6 @@ from analysis_core.ifc import frames
 from analysis_core.ifc.bodies import BodyReader
 from analysis_core.ifc.body_items import Shape
 from analysis_core.ifc.frames import Frame
-from analysis_core.ifc.library_shape import library_mesh
 from analysis_core.ifc.material_choice import NO_CHOICE, Choice, choose
 from analysis_core.ifc.materials import MaterialReader
 from analysis_core.ifc.notes import Notes
@@ -20,7 +19,7 @@ from analysis_core.ifc.records import Record
 from analysis_core.ifc.relations import Relations
 from analysis_core.ifc.sections import SectionReader, measures_of
 from analysis_core.ifc.source import Source
-from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError
+from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError, text_of
 from analysis_core.model import Material
 from analysis_core.settings import Settings
 
@@ -55,11 +54,12 @@ class Elements:
         """Return name and level of each storey, lowest first."""
         found = []
         for storey in self.file.by_type("IfcBuildingStorey"):
-            name = storey.Name or storey.LongName or storey[0]
+            name = text_of(storey.Name) or text_of(storey.LongName) or text_of(storey[0])
             self._storeys[storey.id()] = name
-            elevation = (storey.Elevation or 0.0) * self._length
-            if storey.ObjectPlacement is not None:
-                with suppress(*READ_ERRORS):
+            elevation = 0.0
+            with suppress(*READ_ERRORS):
+                elevation = (storey.Elevation or 0.0) * self._length
+                if storey.ObjectPlacement is not None:
                     elevation = self.placements.frame(storey.ObjectPlacement)[11]
             found.append((name, elevation))
         return tuple(sorted(found, key=lambda pair: pair[1]))
@@ -86,7 +86,7 @@ class Elements:
             return record.object_type
         key = type_.id()
         if key not in self._type_names:
-            self._type_names[key] = type_[2] or ""
+            self._type_names[key] = text_of(type_[2])
         return self._type_names[key] or record.object_type
 
     def choice(self, record: Record) -> Choice:
@@ -135,15 +135,12 @@ class Elements:
     def shape(self, record: Record) -> Shape:
         """Return the shape of an element, or of its parts where it has none of its own.
 
-        A body of an unsupported kind is left to the general-purpose geometry library.
+        A body of an unsupported kind stays unread: the geometry library could mesh it, but it
+        takes the whole program with it on damaged files.
         """
         shape = self._bodies.read(record.shape)
         if shape.items:
             return shape
-        if record.shape is not None and shape.troubles:
-            mesh = library_mesh(record.shape)
-            if mesh is not None:
-                return shape._replace(items=(mesh,), troubles=())
         items = shape.items
         for entity in self.relations.parts_of.get(record.id, ()):
             if entity.is_a("IfcElement") and entity[6] is not None:

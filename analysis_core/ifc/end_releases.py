@@ -11,6 +11,8 @@ import math
 import re
 from typing import Any
 
+from analysis_core.ifc.unreadable import text_of
+
 _END = re.compile(r"^(start|begin|iend|jend|end)")
 _TOPIC = re.compile(r"release|fixity|fixing|endcondition|endtype")
 _BENDING = re.compile(r"(my|ryy?|rotationy|bendingy|momenty|bendingmoment|majoraxis)$")
@@ -28,7 +30,7 @@ def end_releases(file: Any) -> dict[int, Ends]:
     """
     properties = {}
     for item in file.by_type("IfcPropertySingleValue"):
-        name = item.get_argument(0) or ""
+        name = text_of(item.get_argument(0))
         if "elease" in name.lower() or "ixity" in name.lower() or "ixing" in name.lower():
             meaning = _meaning(name, item.get_argument(2))
             if meaning is not None:

@@ -8,11 +8,10 @@ from collections.abc import Sequence
 import numpy as np
 
 from analysis_core.ifc import frames
-from analysis_core.ifc.body_items import Curved, Cut, Item, Mesh, Prism
+from analysis_core.ifc.body_items import Curved, Cut, Item, Mesh, Prism, together
 from analysis_core.ifc.frames import Vector
 from analysis_core.ifc.mesh_cuts import inside
 from analysis_core.ifc.mesh_prisms import mesh_of_prism, prism_of_mesh
-from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
 PARALLEL = math.cos(math.radians(2.0))
@@ -39,7 +38,7 @@ def main_prism(
             found = _lengthwise(item, axis)
             prisms.append(found) if isinstance(found, Prism) else curved.append(found)
     if meshes and not prisms:
-        found = prism_of_mesh(meshes[0] if len(meshes) == 1 else _together(meshes))
+        found = prism_of_mesh(meshes[0] if len(meshes) == 1 else together(meshes))
         prisms.append(found) if isinstance(found, Prism) else curved.append(found)
     if not prisms:
         if curved:
@@ -82,17 +81,6 @@ def _height(prism: Prism) -> float:
     """Extent of the prism at right angles to its profile, times what the frame stretches."""
     normal = frames.cross(prism.frame[0:3], prism.frame[3:6])
     return abs(frames.dot(normal, prism.vector))
-
-
-def _together(meshes: Sequence[Mesh]) -> Mesh:
-    points: list[Floats] = []
-    faces: list[tuple[tuple[int, ...], ...]] = []
-    count = 0
-    for mesh in meshes:
-        points.append(mesh.points)
-        faces += [tuple(tuple(i + count for i in loop) for loop in face) for face in mesh.faces]
-        count += len(mesh.points)
-    return Mesh(np.vstack(points), tuple(faces), meshes[0].ifc_class)
 
 
 def _with_collinear(main: Prism, prisms: Sequence[Prism]) -> Prism:

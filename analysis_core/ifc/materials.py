@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Mapping
+from contextlib import suppress
 from dataclasses import dataclass, replace
 from fnmatch import fnmatchcase
 from typing import Any
@@ -13,6 +14,7 @@ from analysis_core.ifc.file_units import FileUnits, UnitError
 from analysis_core.ifc.material_choice import Choice, choose
 from analysis_core.ifc.material_table import Known, kind_of, known_material
 from analysis_core.ifc.relations import Relations
+from analysis_core.ifc.unreadable import READ_ERRORS, reason_of, text_of
 from analysis_core.model import Material
 from analysis_core.settings import Settings
 
@@ -135,8 +137,8 @@ def _choice_findings(choice: Choice) -> list[Finding]:
 def _material(
     entity: Any, stated: Stated, settings: Settings
 ) -> tuple[Material, tuple[Finding, ...]]:
-    name = (entity[0] or "").strip()
-    stated_kind = getattr(entity, "Category", None) or ""
+    name = text_of(entity[0]).strip()
+    stated_kind = text_of(getattr(entity, "Category", None))
     known = known_material(name, stated_kind)
     values = stated.values
     modulus = values.get("elastic_modulus", 0.0)
@@ -247,9 +249,8 @@ def _trouble(name: str, trouble: str) -> Finding:
 def _stated_by_material(file: Any, units: FileUnits) -> dict[int, Stated]:
     sets: dict[int, list[Any]] = {}
     for properties in file.by_type("IfcMaterialProperties"):
-        material = properties.Material
-        if material is not None:
-            sets.setdefault(material.id(), []).append(properties)
+        with suppress(*READ_ERRORS):  # a set for nothing that is a material
+            sets.setdefault(properties.Material.id(), []).append(properties)
     return {key: _stated(found, units) for key, found in sets.items()}
 
 
@@ -271,10 +272,12 @@ def _stated(sets: Iterable[Any], units: FileUnits) -> Stated:
                 _from_attributes(properties, units, values)
             else:
                 _from_properties(properties, units, values, troubles)
-        except (UnitError, TypeError, ValueError) as error:
+        except UnitError as error:
             troubles.append(f"{properties.is_a()} #{properties.id()}: {error}")
+        except READ_ERRORS as error:
+            troubles.append(f"{properties.is_a()} #{properties.id()}: {reason_of(error)}")
         if len(values) > before:
-            sources.append(getattr(properties, "Name", None) or properties.is_a())
+            sources.append(text_of(getattr(properties, "Name", None)) or properties.is_a())
     return Stated(values, tuple(sources), tuple(troubles))
 
 
@@ -294,7 +297,7 @@ def _from_properties(
     if properties.is_a("IfcExtendedMaterialProperties"):
         items = properties.ExtendedProperties
     for item in items or ():
-        ours = _NAMES.get(re.sub(r"[^a-z]", "", (item[0] or "").lower()))
+        ours = _NAMES.get(re.sub(r"[^a-z]", "", text_of(item[0]).lower()))
         if ours is None or not item.is_a("IfcPropertySingleValue") or item[2] is None:
             continue
         try:

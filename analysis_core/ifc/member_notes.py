@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from itertools import combinations
+from typing import Any
 
 import numpy as np
 
@@ -14,6 +15,7 @@ from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.records import Record
 from analysis_core.ifc.sections import Profile
 from analysis_core.ifc.sticks import Stick
+from analysis_core.ifc.unreadable import text_of
 from analysis_core.model import Section
 
 _OFFSET_WORTH_TELLING = 0.01
@@ -67,6 +69,44 @@ def note_section(
                 "Correct the body or the profile.",
                 record,
             )
+
+
+def note_two_containers(record: Record, containers: Sequence[Any], notes: Notes) -> None:
+    """Note an element that several storeys (or other containers) claim."""
+    names = ", ".join(f"'{text_of(c[2]) or text_of(c[0])}'" for c in containers)
+    notes.group(
+        "note",
+        "two-containers",
+        f"contained in more than one place ({names}); the first was taken",
+        "Contain each element once.",
+        record,
+    )
+
+
+def note_openings(record: Record, notes: Notes) -> None:
+    """Note a member with openings."""
+    notes.group(
+        "note",
+        "openings-ignored",
+        "with openings; their sections were taken without them",
+        "Check the section at the opening by hand.",
+        record,
+    )
+
+
+def note_unreadable_relations(relations: Sequence[Any], notes: Notes) -> None:
+    """Note relations whose attributes do not fit the standard."""
+    if relations:
+        named = ", ".join(f"{r.is_a()} #{r.id()}" for r in relations[:3])
+        notes.add(
+            Finding(
+                "warning",
+                "relation-unreadable",
+                f"{len(relations)} relations hold values that do not fit the standard ({named}); "
+                f"what they say of storeys, types, parts or materials is missing. Export the "
+                f"model again.",
+            )
+        )
 
 
 def note_duplicates(members: list[AxisMember], notes: Notes) -> None:

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import gc
 import math
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from contextlib import contextmanager
 from dataclasses import replace
 from typing import Any
+
+import numpy as np
 
 from analysis_core.building import Area, AxisMember, Building, Carrier
 from analysis_core.ifc.areas import AreaReader
@@ -18,14 +20,21 @@ from analysis_core.ifc.extents import Extent, ExtentReader
 from analysis_core.ifc.frames import Frame, point
 from analysis_core.ifc.main_prism import CurvedMemberError
 from analysis_core.ifc.material_choice import Choice
-from analysis_core.ifc.member_notes import note_duplicates, note_section, note_stick
+from analysis_core.ifc.member_notes import (
+    note_duplicates,
+    note_openings,
+    note_section,
+    note_stick,
+    note_two_containers,
+    note_unreadable_relations,
+)
 from analysis_core.ifc.notes import Notes
 from analysis_core.ifc.outline import Matrix
 from analysis_core.ifc.records import Record
 from analysis_core.ifc.roles import RoleJudge, carrier_label, excluded_by_proportion
 from analysis_core.ifc.source import Source
 from analysis_core.ifc.sticks import Layer, Lying, Stick, stick_of, with_profile
-from analysis_core.ifc.unreadable import UnreadableShapeError
+from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError, reason_of
 from analysis_core.model import Section
 from analysis_core.settings import Settings
 
@@ -37,6 +46,7 @@ OTHER_CARRIER_CLASSES = (
     "IfcBearing",
 )
 
+_FARTHEST = 1e8
 # Classes asked for by default that some schemas do not have.
 _KNOWN_ELSEWHERE = {
     "IfcBeamStandardCase",
@@ -52,7 +62,8 @@ def read_physical(source: Source, settings: Settings) -> Building:
     Nothing is left out in silence: every element of the classes asked for (settings,
     ``analysis.include``) is a member, a carrier or named in a finding.
     """
-    with _collector_paused():
+    # Numbers beyond all measure are caught where they matter; NumPy need not warn as well.
+    with _collector_paused(), np.errstate(all="ignore"):
         return _Reader(source, settings).building()
 
 
@@ -136,8 +147,8 @@ class _Reader:
             self._ids.add(record.global_id)
             try:
                 reader(record)
-            except UnreadableShapeError as error:
-                self._notes.no_shape(record, str(error))
+            except READ_ERRORS as error:
+                self._notes.no_shape(record, reason_of(error))
 
     def _read_beam(self, record: Record) -> None:
         elements = self._elements
@@ -155,6 +166,7 @@ class _Reader:
             self._notes.curved(record, str(error))
             return
         lying = self._layer.lay(stick, frame)
+        _check_place(lying.start + lying.end)
         size, rise = stick.length, lying.end[2] - lying.start[2]
         section, end_section = self._sections(record, stick, lying.matrix)
         if section is None and choice.profile is not None:
@@ -311,6 +323,7 @@ class _Reader:
         lying: Lying | None = None,
         section: Section | None = None,
     ) -> None:
+        _check_place((extent.bottom, extent.top, *(v for corner in extent.corners for v in corner)))
         elements = self._elements
         self._carriers.append(
             Carrier(
@@ -330,26 +343,22 @@ class _Reader:
         )
 
     def _note_relations(self) -> None:
-        relations = self._elements.relations
+        relations, file = self._elements.relations, self._source.file
         mine = {member.global_id for member in self._members}
+        note_unreadable_relations(relations.unreadable, self._notes)
         for key, containers in relations.twice_contained.items():
-            entity = self._source.file.by_id(key)
-            if entity[0] in mine:
-                names = ", ".join(f"'{c[2] or c[0]}'" for c in containers)
-                self._notes.group(
-                    "note",
-                    "two-containers",
-                    f"contained in more than one place ({names}); the first was taken",
-                    "Contain each element once.",
-                    Record.of(entity),
-                )
-        for relation in self._source.file.by_type("IfcRelVoidsElement"):
-            entity = relation[4]
-            if entity is not None and entity[0] in mine:
-                self._notes.group(
-                    "note",
-                    "openings-ignored",
-                    "with openings; their sections were taken without them",
-                    "Check the section at the opening by hand.",
-                    Record.of(entity),
-                )
+            record = Record.of(file.by_id(key))
+            if record.global_id in mine:
+                note_two_containers(record, containers, self._notes)
+        for key in self._area_reader.openings:
+            record = Record.of(file.by_id(key))
+            if record.global_id in mine:
+                note_openings(record, self._notes)
+
+
+def _check_place(coordinates: Iterable[float]) -> None:
+    """Raise UnreadableShapeError for numbers that are nowhere on earth (m)."""
+    if not all(-_FARTHEST < value < _FARTHEST for value in coordinates):
+        raise UnreadableShapeError(
+            f"its coordinates are no finite numbers below {_FARTHEST / 1e3:,.0f} km"
+        )

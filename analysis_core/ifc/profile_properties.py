@@ -13,12 +13,14 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Iterable, Mapping
+from contextlib import suppress
 from dataclasses import dataclass, replace
 from typing import Any
 
 from analysis_core.findings import Finding
 from analysis_core.ifc.file_units import FileUnits, UnitError
 from analysis_core.ifc.outline import Matrix, Moments
+from analysis_core.ifc.unreadable import READ_ERRORS, reason_of, text_of
 from analysis_core.model import Section
 
 _AGREEMENT = 0.02
@@ -163,9 +165,8 @@ def stated_by_profile(file: Any, units: FileUnits) -> dict[int, Stated]:
     """Return what property sets state, by entity number of the profile; each class walked once."""
     sets: dict[int, list[Any]] = {}
     for properties in file.by_type("IfcProfileProperties"):
-        profile = properties.ProfileDefinition
-        if profile is not None:
-            sets.setdefault(profile.id(), []).append(properties)
+        with suppress(*READ_ERRORS):  # IFC2X3 lets a set name its profile only
+            sets.setdefault(properties.ProfileDefinition.id(), []).append(properties)
     found = {key: _stated(group, units) for key, group in sets.items()}
     return {key: stated for key, stated in found.items() if stated is not None}
 
@@ -182,7 +183,12 @@ def _stated(sets: Iterable[Any], units: FileUnits) -> Stated | None:
     troubles: list[str] = []
     for properties in sorted(sets, key=lambda entity: int(entity.id())):
         before = len(values)
-        for name, number, factors in _numbers(properties, units, troubles):
+        try:
+            found = list(_numbers(properties, units, troubles))
+        except READ_ERRORS as error:
+            troubles.append(f"{_source(properties)}: {reason_of(error)}")
+            continue
+        for name, number, factors in found:
             ours, _, power = _NAMES[name]
             if math.isfinite(number) and (number > 0.0 or ours == "inertia_product"):
                 values.setdefault(ours, (number, factors, power))
@@ -206,7 +212,7 @@ def _numbers(
                 yield name, float(value), _factors(name, units)
         return
     for item in getattr(properties, "Properties", None) or ():
-        name = re.sub(r"[^a-z]", "", (item[0] or "").lower())
+        name = re.sub(r"[^a-z]", "", text_of(item[0]).lower())
         if name not in _NAMES or not item.is_a("IfcPropertySingleValue") or item[2] is None:
             continue
         number = item[2][0]
@@ -230,9 +236,8 @@ def _factors(name: str, units: FileUnits) -> tuple[float, ...]:
 
 
 def _source(properties: Any) -> str:
-    if properties.is_a("IfcExtendedProperties") and properties.Name:
-        return str(properties.Name)
-    return str(properties.is_a())
+    name = text_of(properties.Name) if properties.is_a("IfcExtendedProperties") else ""
+    return name or str(properties.is_a())
 
 
 def _upright(matrix: Matrix) -> bool:

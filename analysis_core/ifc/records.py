@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from typing import Any, NamedTuple
 
+from analysis_core.ifc.unreadable import text_of
+
 
 class Record(NamedTuple):
     """An element (IfcElement or IfcSpatialElement) with its attributes by name.
@@ -29,9 +31,9 @@ class Record(NamedTuple):
             entity,
             entity.id(),
             entity.is_a(),
-            get(0) or "",
-            get(2) or "",
-            get(4) or "",
+            text_of(get(0)),
+            text_of(get(2)),
+            text_of(get(4)),
             get(5),
             get(6),
         )

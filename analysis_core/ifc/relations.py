@@ -5,13 +5,16 @@ from __future__ import annotations
 from collections.abc import Iterable
 from typing import Any
 
+from analysis_core.ifc.unreadable import READ_ERRORS
+
 Grouped = dict[int, Any]
 
 
 class Relations:
     """Types, materials, containers, wholes and parts of elements, by entity number.
 
-    ``twice_contained`` lists elements (entity number) that several containers claim.
+    ``twice_contained`` lists elements (entity number) that several containers claim,
+    ``unreadable`` relations whose attributes do not fit the standard.
     """
 
     def __init__(self, file: Any) -> None:
@@ -21,6 +24,7 @@ class Relations:
         self.whole_of: Grouped = {}
         self.parts_of: dict[int, tuple[Any, ...]] = {}
         self.twice_contained: dict[int, list[Any]] = {}
+        self.unreadable: list[Any] = []
         self._spread(file, "IfcRelDefinesByType", self.type_of)
         self._spread(file, "IfcRelAssociatesMaterial", self.material_of)
         self._contain(file)
@@ -65,32 +69,41 @@ class Relations:
             yield here
             here = self.whole_of.get(here.id())
 
-    @staticmethod
-    def _spread(file: Any, ifc_class: str, target: Grouped) -> None:
+    def _spread(self, file: Any, ifc_class: str, target: Grouped) -> None:
         for relation in file.by_type(ifc_class):
-            related, relating = relation[4], relation[5]
-            if relating is None:
-                continue
-            for item in related or ():
-                target.setdefault(item.id(), relating)
+            try:
+                related, relating = relation[4], relation[5]
+                if relating is None or relating.id() == 0:
+                    continue
+                for item in related or ():
+                    target.setdefault(item.id(), relating)
+            except READ_ERRORS:
+                self.unreadable.append(relation)
 
     def _contain(self, file: Any) -> None:
         for relation in file.by_type("IfcRelContainedInSpatialStructure"):
-            related, relating = relation[4], relation[5]
-            if relating is None:
-                continue
-            for item in related or ():
-                key = item.id()
-                known = self.container_of.setdefault(key, relating)
-                if known.id() != relating.id():
-                    self.twice_contained.setdefault(key, [known]).append(relating)
+            try:
+                related, relating = relation[4], relation[5]
+                if relating is None:
+                    continue
+                for item in related or ():
+                    key = item.id()
+                    known = self.container_of.setdefault(key, relating)
+                    if known.id() != relating.id():
+                        self.twice_contained.setdefault(key, [known]).append(relating)
+            except READ_ERRORS:
+                self.unreadable.append(relation)
 
     def _aggregate(self, file: Any) -> None:
         for ifc_class in ("IfcRelAggregates", "IfcRelNests"):
             for relation in file.by_type(ifc_class):
-                whole, parts = relation[4], relation[5] or ()
-                if whole is None:
-                    continue
-                for part in parts:
-                    self.whole_of.setdefault(part.id(), whole)
-                self.parts_of[whole.id()] = self.parts_of.get(whole.id(), ()) + tuple(parts)
+                try:
+                    whole, parts = relation[4], relation[5] or ()
+                    if whole is None:
+                        continue
+                    for part in parts:
+                        self.whole_of.setdefault(part.id(), whole)
+                    known = self.parts_of.get(whole.id(), ())
+                    self.parts_of[whole.id()] = known + tuple(parts)
+                except READ_ERRORS:
+                    self.unreadable.append(relation)

@@ -29,7 +29,7 @@ from analysis_core.ifc.outline import IDENTITY, Floats, Loops, Matrix, Moments
 from analysis_core.ifc.paths import Measures
 from analysis_core.ifc.profile_properties import Stated, stated_for
 from analysis_core.ifc.profiles import ProfileDrawer
-from analysis_core.ifc.unreadable import READ_ERRORS, reason_of
+from analysis_core.ifc.unreadable import READ_ERRORS, reason_of, text_of
 from analysis_core.model import Section
 
 
@@ -214,7 +214,7 @@ def section_of(profile: Profile, matrix: Matrix = IDENTITY) -> Section:
 
 
 def _name(entity: Any) -> str:
-    return (entity[1] or "").strip() if len(entity) > 1 else ""
+    return text_of(entity[1]).strip() if len(entity) > 1 else ""
 
 
 def _source(profile: Profile) -> str:

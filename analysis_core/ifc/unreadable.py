@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 
 class UnreadableShapeError(ValueError):
     """A curve, profile, placement or body that cannot be read; the message says why."""
@@ -18,3 +20,8 @@ def reason_of(error: Exception) -> str:
     if isinstance(error, UnreadableShapeError):
         return str(error)
     return "its values are missing or do not fit the standard"
+
+
+def text_of(value: Any) -> str:
+    """Return an attribute that should be text, "" where it is missing or something else."""
+    return value if isinstance(value, str) else ""
