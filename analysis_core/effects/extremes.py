@@ -69,8 +69,9 @@ def largest(coefficients: Floats, cuts: Floats, table: FactorTable, stretches: S
     _, segments, count, size = coefficients.shape
     by_part = coefficients.transpose(0, 2, 1, 3).reshape(-1, count, segments * size)
     find = _fixed if table.fixed else _varied
-    found = find(by_part, size, table, stretches)
-    row, segment, t = _first(found, size)
+    scale = _scale(by_part, size, table)
+    found = find(by_part, scale, table, stretches)
+    row, segment, t = _first(found, scale)
     members = np.arange(size)
     chosen = by_part[..., segment * size + members]  # (P, C, B)
     contributions = evaluate(chosen, t)
@@ -101,6 +102,19 @@ def _settled(polynomials: Floats, t: Floats) -> tuple[Floats, Floats]:
     return evaluate(polynomials, t), t
 
 
+def _scale(by_part: Floats, size: int, table: FactorTable) -> Floats:
+    """A bound of what the effect of all parts together can reach on each member (B)."""
+    reach = np.add.reduce(np.abs(by_part), axis=0)  # (C, K*B)
+    weight = np.maximum(np.abs(table.low), np.abs(table.high)).max(axis=0)
+    total = np.add.reduce(weight[:, None] * reach, axis=0)
+    return np.asarray(total.reshape(-1, size).max(axis=0))
+
+
+def _parts_at(by_part: Floats, size: int, s: Stretches) -> Floats:
+    """The polynomials of the parts (P, C, n) on the segments of the stretches."""
+    return by_part[..., s.segment * size + s.member]
+
+
 @dataclass(slots=True, eq=False)
 class _Found:
     """Candidates: member, row, segment, t and value, all (n)."""
@@ -112,26 +126,25 @@ class _Found:
     value: Floats
 
 
-def _fixed(by_part: Floats, size: int, table: FactorTable, s: Stretches) -> _Found:
+def _fixed(by_part: Floats, scale: Floats, table: FactorTable, s: Stretches) -> _Found:
     """Each row is one polynomial per segment."""
-    chosen = by_part[..., s.segment * size + s.member]  # (P, C, n)
+    chosen = _parts_at(by_part, len(scale), s)
     value, t = largest_between(_weighted(chosen, table.high.T[:, s.row]), s.low, s.high)
     return _Found(s.member, s.row, s.segment, t, value)
 
 
-def _varied(by_part: Floats, size: int, table: FactorTable, s: Stretches) -> _Found:
+def _varied(by_part: Floats, scale: Floats, table: FactorTable, s: Stretches) -> _Found:
     """Each row is the sum of its adverse parts, on ever smaller stretches."""
-    best, scale = np.full(size, -np.inf), np.zeros(size)
+    best = np.full(len(scale), -np.inf)
     pieces: list[_Found] = []
 
     def found(where: Stretches, t: Floats, value: Floats) -> None:
         pieces.append(_Found(where.member, where.row, where.segment, t, value))
         np.maximum.at(best, where.member, value)
-        np.maximum.at(scale, where.member, np.abs(value))
 
-    s = _plain(by_part, size, table, s, found)
+    s = _plain(by_part, len(scale), table, s, found)
     for _ in range(_HALVINGS if len(s.row) else 0):
-        chosen = by_part[..., s.segment * size + s.member]  # (P, C, n)
+        chosen = _parts_at(by_part, len(scale), s)
         local = restricted(chosen, s.low, s.high)
         lows, highs = table.low.T[:, s.row], table.high.T[:, s.row]
         rounding = _ROUNDING * np.max(np.abs(chosen), axis=0)
@@ -176,7 +189,7 @@ def _plain(
     A part cannot where its values at both ends are of one sign and larger than what its second
     derivative could take away between them.
     """
-    chosen = by_part[..., s.segment * size + s.member]  # (P, C, n)
+    chosen = _parts_at(by_part, size, s)
     lows, highs = table.low.T[:, s.row], table.high.T[:, s.row]
     at_low, at_high = (evaluate(chosen, t) for t in (s.low, s.high))
     powers = np.arange(len(chosen), dtype=np.float64)
@@ -237,12 +250,10 @@ def _weighted(chosen: Floats, factors: Floats) -> Floats:
     return np.asarray(np.add.reduce(chosen * factors, axis=1))
 
 
-def _first(found: _Found, size: int) -> tuple[Integers, Integers, Floats]:
+def _first(found: _Found, scale: Floats) -> tuple[Integers, Integers, Floats]:
     """Of each member's candidates the largest; of equal ones the first row, leftmost."""
-    top = np.full(size, -np.inf)
+    top = np.full(len(scale), -np.inf)
     np.maximum.at(top, found.member, found.value)
-    scale = np.zeros(size)
-    np.maximum.at(scale, found.member, np.abs(found.value))
     good = found.value >= (top - EQUAL * scale)[found.member]
     member, row, segment, t = (
         getattr(found, name)[good] for name in ("member", "row", "segment", "t")

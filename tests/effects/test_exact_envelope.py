@@ -403,3 +403,16 @@ def test_a_peak_beside_the_place_where_a_part_becomes_adverse(sign, slope, zero,
     assert extreme.value == pytest.approx(sign * value, rel=1e-12)
     assert extreme.x == pytest.approx(x, abs=1e-9)
     assert extreme.source == source
+
+
+def test_a_simple_beam_hogs_nowhere_and_says_so_at_its_start():
+    # Both ends are free of moment but for rounding, which must not decide the place.
+    line = beam_line([6.4], [3e7], [PIN] * 2, [DistributedForce("G", 0, 0.0, 6.4, (7.3e3, 311.0))])
+    one = [Combination("U1", "strength", {"G": 1.35})]
+
+    (found,) = envelope(
+        whole_cases(line, ["G"]), solve(line, ["G"]), one, limit_state="strength"
+    ).members
+
+    assert (found.hogging.value, found.hogging.x) == (0.0, 0.0)
+    assert (found.deflection_up.value, found.deflection_up.x) == (0.0, 0.0)
