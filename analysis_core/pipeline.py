@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import difflib
 from collections.abc import Callable, Iterator, Mapping, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 from datetime import datetime
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -20,7 +20,9 @@ from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
+from analysis_core.ifc.posted import Posted, known_marks, read_posted
 from analysis_core.kept_marks import with_kept_marks
+from analysis_core.line_fingerprints import line_bases
 from analysis_core.model import LineModel
 from analysis_core.results import LineResult, Outcome
 from analysis_core.revision import Reconciliation, marks_before
@@ -33,6 +35,7 @@ from analysis_core.units import display_units
 if TYPE_CHECKING:
     from analysis_core.checking import MemberChecks
     from analysis_core.ifc.writer import PostReport
+    from analysis_core.posted_states import PostedState
     from analysis_core.sheet.html import Markup
 
 Progress = Callable[[str, float], None]
@@ -51,15 +54,12 @@ class Reading:
     building: Building
     findings: tuple[Finding, ...]
     settings: Settings
+    posted: Mapping[str, tuple[Posted, ...]] = field(default_factory=dict)
+    """What was posted earlier, by the GlobalId of the element."""
 
     def serves(self, settings: Settings) -> bool:
         """Whether the file need not be read again for other settings."""
-        mine, other = self.settings, settings
-        return (mine.analysis, mine.materials, mine.tolerances) == (
-            other.analysis,
-            other.materials,
-            other.tolerances,
-        )
+        return _asked_of_reading(self.settings) == _asked_of_reading(settings)
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,6 +73,8 @@ class Survey:
     findings: tuple[Finding, ...]
     route: str = "physical"
     """"analytical" or "physical"."""
+    posted: Mapping[str, tuple[Posted, ...]] = field(default_factory=dict)
+    """What was posted earlier, by the GlobalId of the element."""
 
 
 def survey(
@@ -100,13 +102,22 @@ def read(
     source = ifc_source.open_model(path)
     tell("Reading", 0.5)
     building = _read(source, settings)
+    posted = read_posted(source)
+    building = replace(building, known_marks=known_marks(posted))
     tell("Reading", 1.0)
-    findings = (*source.findings, *building.findings)
-    return Reading(source.name, source.schema, source.fingerprint, building, findings, settings)
+    return Reading(
+        source.name,
+        source.schema,
+        source.fingerprint,
+        building,
+        (*source.findings, *building.findings),
+        settings,
+        posted,
+    )
 
 
 def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ()) -> Survey:
-    """Idealise what was read.  Raises JobError."""
+    """Idealise what was read; lines keep the marks they were posted with.  Raises JobError."""
     model = idealise.idealise(reading.building, settings)
     findings = tuple(dict.fromkeys((*reading.findings, *model.findings)))
     model = replace(
@@ -123,6 +134,7 @@ def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ())
         model,
         findings,
         reading.building.route,
+        reading.posted,
     )
 
 
@@ -168,6 +180,20 @@ def solve(
     )
 
 
+def posted_states(found: Survey, settings: Settings) -> dict[str, PostedState]:
+    """Return by mark whether the results in the file hold, without solving.  Raises JobError."""
+    from analysis_core.posted_states import PostedState
+    from analysis_core.posted_states import posted_states as states
+
+    if not found.posted:
+        return {line.mark: PostedState("not posted") for line in found.model.lines}
+    rules, _ = choose(found.model, settings)
+    bases = line_bases(
+        found.model, combinations=rules.combinations, rules=rules.name, settings=settings
+    )
+    return states(found.model, bases, found.posted)
+
+
 def reconcile(
     before: str | Path,
     after: str | Path,
@@ -198,11 +224,19 @@ def post(
     *,
     progress: Progress | None = None,
     analysis_model: bool = False,
+    only: Sequence[str] = (),
 ) -> PostReport:
-    """Write an outcome into a copy of its model, or the model itself.  Raises IfcWriteError."""
+    """Write an outcome into a copy of its model, or the model itself.
+
+    ``outcome`` holds all lines; ``only``: marks of those to be written, all where empty.  What was
+    posted for others then stays.  Raises IfcWriteError, JobError.
+    """
     from analysis_core.ifc import writer  # posting is not always wanted; keep the start quick
 
-    return writer.post(source, target, outcome, analysis_model=analysis_model, progress=progress)
+    _check_marks(outcome.model, only)
+    return writer.post(
+        source, target, outcome, analysis_model=analysis_model, only=only, progress=progress
+    )
 
 
 def checks(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks, ...]]:
@@ -259,6 +293,13 @@ def of_storeys(outcome: Outcome, storeys: Sequence[str]) -> Outcome:
     return replace(outcome, model=_restricted(outcome.model, chosen), lines=chosen)
 
 
+def of_lines(outcome: Outcome, marks: Sequence[str]) -> Outcome:
+    """Return the lines of these marks alone, all where there are none.  Raises JobError."""
+    _check_marks(outcome.model, marks)
+    chosen = tuple(r for r in outcome.lines if not marks or r.line.mark in marks)
+    return replace(outcome, model=_restricted(outcome.model, chosen), lines=chosen)
+
+
 def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
     from analysis_core.calculation import check_parts, detail_parts, distribution_parts
@@ -303,13 +344,33 @@ def job_text(found: Survey, settings: Settings) -> str:
     return text(found.model, file=found.file, rules=settings.rules.name, physical=physical)
 
 
-def survey_document(found: Survey) -> dict[str, Any]:
-    """Return a survey in the form of the results file, without results."""
-    lines = tuple(LineResult(line, "not analysed") for line in found.model.lines)
+def survey_document(
+    found: Survey,
+    states: Mapping[str, PostedState] | None = None,
+    *,
+    only: Sequence[str] = (),
+) -> dict[str, Any]:
+    """Return a survey in the form of the results file, without results.
+
+    With ``states``, each line also tells whether its results in the file hold ("posted").
+    """
+    wanted = [line for line in found.model.lines if not only or line.mark in only]
+    lines = tuple(LineResult(line, "not analysed") for line in wanted)
     outcome = Outcome(
         found.file, found.schema, found.fingerprint, found.model, lines, found.findings
     )
-    return document(outcome)
+    data = document(outcome)
+    known = states or {}
+    for line in data["lines"]:
+        state = known.get(line["mark"])
+        if state is None:
+            continue
+        line["posted"] = {
+            "state": state.state,
+            "reasons": list(state.reasons),
+            "computed_at": state.computed_at or None,
+        }
+    return data
 
 
 def rules_text(name: str | None) -> str:
@@ -332,6 +393,16 @@ def _read(source: ifc_source.Source, settings: Settings) -> Building:
     from analysis_core.ifc.physical import read_physical
 
     return read_physical(source, settings)
+
+
+def _asked_of_reading(settings: Settings) -> Settings:
+    """The settings without those that come into play after reading; a new one counts as read."""
+    blank = Settings()
+    later = (
+        "title", "text", "display", "rules", "cases", "combinations", "actions", "movements",
+        "supports", "releases", "sections", "limits", "checks",
+    )  # fmt: skip
+    return replace(settings, **{name: getattr(blank, name) for name in later})
 
 
 def _names(building: Building) -> dict[str, str]:
