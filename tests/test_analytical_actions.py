@@ -149,7 +149,8 @@ def middle_moment(action: AxisAction, length: float) -> float:
     plus the share of the middle, by fine trapezoids."""
     x = np.linspace(0.0, length / 2, 20001)
     q = -np.interp(x, action.stations, [f[2] for f in action.forces])
-    return float(np.trapz(q * x, x))
+    y = q * x
+    return float(((y[1:] + y[:-1]) / 2 * np.diff(x)).sum())
 
 
 def test_values_without_places_are_evenly_spaced(tmp_path: Path) -> None:
