@@ -337,3 +337,10 @@ def test_a_span_with_nothing_left_to_solve_for(support: Support, springs: tuple[
     assert solution.end_shears[0, 0].tolist() == [20e3, -20e3]
     assert largest_difference(solution) < 1e-14
     assert largest_differences([solution] * 10) == [pytest.approx(0.0, abs=1e-14)] * 10
+
+
+def test_a_line_with_a_fault_is_not_solved():
+    line = _line([FIXED, FIXED], [Member(0, 0, 1, (Piece(5.0, (1.0,)),))])
+
+    with pytest.raises(ModelError, match="its material has no stiffness"):
+        solve_stiffness(replace(line, fault="its material has no stiffness"), ["q"])

@@ -62,9 +62,11 @@ def solve_stiffness(line: Line, cases: Sequence[str]) -> LineSolution:
     Serves to check the moment distribution and shares nothing with it.  Axial forces that
     equilibrium leaves open (two rigid bearings in a row) come out as for one axial rigidity.
 
-    Raises MechanismError where parts of the line move freely, and ModelError where prescribed
-    movements cannot be followed.
+    Raises MechanismError where parts of the line move freely, and ModelError where it has a
+    fault or prescribed movements cannot be followed.
     """
+    if line.fault:
+        raise ModelError(f"Line {line.mark} is not solved: {line.fault}")
     pattern = line_pattern(line, tuple(cases))
     arrays = gather([line], [cases])
     numbers = numbering(pattern)
