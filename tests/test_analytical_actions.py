@@ -8,7 +8,7 @@ from typing import Any
 
 import numpy as np
 import pytest
-from analytical_helpers import SCHEMAS, finding, read, slugs
+from analytical_reading import SCHEMAS, finding, read, slugs
 from ifc_makers import (
     AnalysisFile,
     Case,

@@ -8,7 +8,7 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from analytical_helpers import SCHEMAS, by_name, finding, read, slugs
+from analytical_reading import SCHEMAS, by_name, finding, read, slugs
 from ifc_makers import (
     FREE,
     RIGID,

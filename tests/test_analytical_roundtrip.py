@@ -6,7 +6,7 @@ import math
 from pathlib import Path
 
 import pytest
-from analytical_helpers import SCHEMAS, by_name, finding, read, slugs
+from analytical_reading import SCHEMAS, by_name, finding, read, slugs
 from ifc_makers import (
     FREE,
     RIGID,

@@ -10,7 +10,7 @@ from pathlib import Path
 from typing import Any
 
 import pytest
-from analytical_helpers import SCHEMAS
+from analytical_reading import SCHEMAS
 from ifc_makers import (
     FREE,
     RIGID,
