@@ -197,9 +197,12 @@ def _survey(options: argparse.Namespace) -> int:
     survey = pipeline.survey(options.model, settings, progress=_progress(), only=options.line)
     if options.job_out:
         _write(Path(options.job_out), pipeline.job_text(survey, settings))
+    states = pipeline.posted_states(survey, settings)
     units = display_units(settings.display.system, settings.display.units)
-    _put(options, lambda: pipeline.survey_document(survey),
-         survey_text(survey.model, survey.file, survey.schema, units))  # fmt: skip
+    text = survey_text(
+        survey.model, survey.file, survey.schema, units, states=states, only=options.line
+    )
+    _put(options, lambda: pipeline.survey_document(survey, states, only=options.line), text)
     return INCOMPLETE if any(f.severity == "error" for f in survey.findings) else OK
 
 
@@ -233,14 +236,16 @@ def _balance(options: argparse.Namespace) -> int:
 def _post(options: argparse.Namespace) -> int:
     settings = _settings(options)
     target = Path(options.model if options.in_place else options.output)
-    outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
-    _put(options, lambda: pipeline.document(outcome, stations=options.stations), "")
-    _post_to(outcome, options.model, target)
-    return _status(outcome)
+    found = pipeline.survey(options.model, settings, progress=_progress(), only=options.line)
+    outcome = pipeline.solve(found, settings, progress=_progress())
+    chosen = pipeline.of_lines(outcome, options.line)
+    _put(options, lambda: pipeline.document(chosen, stations=options.stations), "")
+    _post_to(outcome, options.model, target, only=options.line)
+    return _status(chosen)
 
 
-def _post_to(outcome: Outcome, source: str, target: Path) -> None:
-    report = pipeline.post(outcome, source, target, progress=_progress())
+def _post_to(outcome: Outcome, source: str, target: Path, only: Sequence[str] = ()) -> None:
+    report = pipeline.post(outcome, source, target, progress=_progress(), only=only)
     notes = findings_text(report.findings)
     print(
         f"Posted into '{safe(str(target))}': {report.written} property sets new, "

@@ -13,6 +13,7 @@ from __future__ import annotations
 import hashlib
 import json
 import math
+import re
 from collections.abc import Mapping, Sequence
 from dataclasses import fields
 
@@ -28,6 +29,7 @@ from analysis_core.model import (
 from analysis_core.settings import Settings
 
 RECEIVES = "whose reactions it receives"
+_DIGEST = re.compile(r" ?#[0-9a-f]{10}\b")
 
 
 def fingerprint(basis: Mapping[str, str]) -> str:
@@ -95,7 +97,7 @@ def differences(
         if subject == "received" and old and new:
             sentences.append(f"{which}, {RECEIVES}, changed")
         elif subject in ("geometry", "section", "material", "support", "actions", "rules"):
-            sentences.append(_change(what, old, new))
+            sentences.append(_change(subject, what, old, new))
         else:
             sentences.append(f"{what} changed")
     return sentences
@@ -111,12 +113,24 @@ def _subject(subject: str, which: str, names: Mapping[str, str]) -> str:
     return f"{subject} of {names.get(which) or which}"
 
 
-def _change(what: str, old: str | None, new: str | None) -> str:
+def _change(subject: str, what: str, old: str | None, new: str | None) -> str:
+    was, now = _shown(old or ""), _shown(new or "")
+    if subject == "actions":
+        if old is None:
+            return f"{what} are new ({now} of them)"
+        if new is None:
+            return f"{what} are gone ({was} before)"
+        return f"{what} changed" if was == now else f"{what} changed, {was} before and {now} now"
     if old is None:
-        return f"{what} is new ({new})"
+        return f"{what} is new ({now})"
     if new is None:
-        return f"{what} is gone (was {old})"
-    return f"{what} changed from {old} to {new}"
+        return f"{what} is gone (was {was})"
+    return f"{what} changed" if was == now else f"{what} changed from {was} to {now}"
+
+
+def _shown(text: str) -> str:
+    """A text without the digests, which say nothing to an engineer."""
+    return _DIGEST.sub("", text)
 
 
 def _geometry(line: Line) -> str:

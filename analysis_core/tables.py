@@ -9,13 +9,17 @@ from __future__ import annotations
 import math
 import unicodedata
 from collections import Counter
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Callable, Iterable, Mapping, Sequence
+from typing import TYPE_CHECKING
 
 from analysis_core.findings import Finding, Severity
 from analysis_core.line_details import Redistributed, detail_of
 from analysis_core.model import Joint, Line, LineModel, Member, Support
 from analysis_core.results import Extreme, LineResult, MemberEnvelope, Outcome
 from analysis_core.units import DisplayUnits
+
+if TYPE_CHECKING:
+    from analysis_core.posted_states import PostedState
 
 CAUTION = (
     "Caution: computed from the model as idealised. Local codes govern; a licensed engineer must "
@@ -31,10 +35,25 @@ def safe(text: str) -> str:
     )
 
 
-def survey_text(model: LineModel, file: str, schema: str, units: DisplayUnits) -> str:
-    """Return what was found: lines, spans, supports with their reasons, actions, findings."""
+def survey_text(
+    model: LineModel,
+    file: str,
+    schema: str,
+    units: DisplayUnits,
+    *,
+    states: Mapping[str, PostedState] | None = None,
+    only: Sequence[str] = (),
+) -> str:
+    """Return what was found: lines, spans, supports with their reasons, actions, findings.
+
+    ``states`` by mark: whether the results that stand in the file hold.  ``only``: marks of the
+    lines wanted, all where empty.
+    """
     parts = [_headline(model, file, schema)]
-    parts += [_survey_line(line, units) for line in model.lines]
+    wanted = [line for line in model.lines if not only or line.mark in only]
+    parts += [_survey_line(line, units) for line in wanted]
+    known = states or {}
+    parts.append(_posted_text({x.mark: known[x.mark] for x in wanted if x.mark in known}))
     parts.append(_cases_text(model))
     parts.append(findings_text(model.findings))
     parts.append(CAUTION)
@@ -158,6 +177,20 @@ def _survey_joint(joint: Joint, units: DisplayUnits) -> str:
         f"  joint {joint.id} at {units.text(joint.x, 'length')}: "
         f"{support_text(joint.support, units)}{reason}{element}"
     )
+
+
+def _posted_text(states: Mapping[str, PostedState]) -> str:
+    """Which results in the file hold; nothing where none were posted."""
+    counts = Counter(state.state for state in states.values())
+    if not counts.keys() - {"not posted"}:
+        return ""
+    head = ", ".join(f"{counts[s]} {s}" for s in ("current", "stale", "not posted") if counts[s])
+    rows = [f"Results in the file, by line: {head}"]
+    for mark, state in states.items():
+        if state.state != "current":
+            why = f": {safe('; '.join(state.reasons))}" if state.reasons else ""
+            rows.append(f"  {safe(mark)} {state.state}{why}")
+    return "\n".join(rows)
 
 
 def _cases_text(model: LineModel) -> str:

@@ -103,5 +103,5 @@ def test_a_new_action_and_another_support_are_named(line):
 
     actions, support = differences(of(line), of(after), {})
 
-    assert actions.startswith("actions of G changed from 1 #")
+    assert actions == "actions of G changed, 1 before and 2 now"
     assert support == "support at joint 0 changed from rigid/free/free to rigid/free/rigid"

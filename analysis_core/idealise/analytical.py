@@ -7,6 +7,7 @@ from analysis_core.idealise.assemblies import assemble
 from analysis_core.idealise.carrying import Contact, Touch, decide
 from analysis_core.idealise.conditions import put_releases, put_supports, vertical_stiffness
 from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.known_marks import keep_marks
 from analysis_core.idealise.log import Log, listed, named
 from analysis_core.idealise.marks import put_marks
 from analysis_core.idealise.network import network_of
@@ -24,6 +25,7 @@ def analytical_scheme(building: Building, settings: Settings, log: Log) -> Schem
     groups = plane_groups(network, tolerances)
     drafts = [assemble(network, group, tolerances) for group in groups]
     put_marks(drafts, building.storeys)
+    keep_marks(drafts, building.known_marks)
     drafts.sort(key=lambda draft: (draft.kind != "line", draft.mark))
     for draft in drafts:
         put_supports(draft, network, log)

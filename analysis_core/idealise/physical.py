@@ -11,6 +11,7 @@ from analysis_core.idealise.beams import Beam, beam_of
 from analysis_core.idealise.bearing_search import find_bearings
 from analysis_core.idealise.bearings import Bearing, kind_of
 from analysis_core.idealise.chains import End, Link, chains, link_ends
+from analysis_core.idealise.known_marks import keep_marks
 from analysis_core.idealise.legs import Legs
 from analysis_core.idealise.log import Log, listed, named
 from analysis_core.idealise.marks import put_marks
@@ -62,6 +63,7 @@ def physical_scheme(
         seat(chain, bearings, tolerances)
         drafts.append(draft_of(chain, tolerances))
     put_marks(drafts, building.storeys)
+    keep_marks(drafts, building.known_marks)
     order = sorted(range(len(drafts)), key=lambda i: drafts[i].mark)
     drafts = [drafts[i] for i in order]
     found = [found[i] for i in order]

@@ -7,6 +7,7 @@ sets share, the set itself, and its relation to the element.
 
 from __future__ import annotations
 
+import json
 import math
 from collections.abc import Mapping, Sequence
 from datetime import UTC, datetime
@@ -187,7 +188,7 @@ class RecordWriter:
         refs = self._known.get(key)
         if refs is None:
             numbers = [self._method, *self._checks(results), self._rules,
-                       self._fingerprint(results), *self._rest]  # fmt: skip
+                       self._fingerprint(results), *self._basis(results), *self._rest]  # fmt: skip
             refs = self._known[key] = ",".join(f"#{n}" for n in numbers)
         self._sets.add(element, RECORD, refs)
 
@@ -217,3 +218,12 @@ class RecordWriter:
     def _fingerprint(self, results: Sequence[LineResult]) -> int:
         prints = dict.fromkeys(r.fingerprint for r in results if r.fingerprint)
         return self._sets.text("Fingerprint", "IFCIDENTIFIER", "+".join(prints))
+
+    def _basis(self, results: Sequence[LineResult]) -> list[int]:
+        """What the fingerprint was taken of, as JSON; by mark where there are several lines."""
+        bases = {r.line.mark: dict(r.basis) for r in results if r.basis}
+        if not bases:
+            return []
+        data = bases if len(results) > 1 else next(iter(bases.values()))
+        value = f"IFCTEXT({string(json.dumps(data, separators=(',', ':')))})"
+        return [self._sets.lines.shared(f"IFCPROPERTYSINGLEVALUE('Basis',$,{value},$)")]
