@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from analysis_core.checking import check_line
+from dataclasses import replace
+
+from analysis_core.checking import MemberChecks, check_line
 from analysis_core.distribution.record import distribute
 from analysis_core.effects.states import State, state_line
 from analysis_core.errors import AnalysisError
@@ -12,7 +14,7 @@ from analysis_core.model import LineModel
 from analysis_core.record_rows import closing_note, record_tables
 from analysis_core.results import LineResult
 from analysis_core.settings import Settings
-from analysis_core.sheet.checks import NOTE, member_checks
+from analysis_core.sheet.checks import NOTE, line_checks
 from analysis_core.sheet.details import deflections, redistribution, support_moments
 from analysis_core.sheet.distribution import distribution, fixed_ends
 from analysis_core.sheet.html import Markup, tag
@@ -21,6 +23,10 @@ from analysis_core.units import DisplayUnits
 
 _SHOWN = ("sagging", "hogging")
 _MOST = 4
+WORKED_ONCE = (
+    "The working of each check is written down for the member of a section that uses most of its "
+    "resistance; the others follow the same formulas."
+)
 
 
 def distribution_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
@@ -58,20 +64,35 @@ def check_parts(
     result: LineResult, model: LineModel, settings: Settings, units: DisplayUnits
 ) -> list[Markup]:
     """Return the checks of the members of a line."""
-    found = check_line(result, model, settings)
+    found = _worked_once(result, check_line(result, model, settings))
     if not found:
         return []
-    parts = [
-        member_checks(
-            member_name(result.line.members[each.member]),
-            each.code,
-            each.restraints,
-            each.checks,
-            units,
-        )
-        for each in found
+    members = [
+        (member_name(result.line.members[e.member]), e.code, e.restraints, e.checks) for e in found
     ]
-    return [tag("h3", "Member checks"), *parts, tag("p", NOTE, class_="verification")]
+    parts = line_checks(members, units)
+    notes = [tag("p", text, class_="verification") for text in (WORKED_ONCE, NOTE)]
+    return [tag("h3", "Member checks"), *parts, *notes]
+
+
+def _worked_once(result: LineResult, found: list[MemberChecks]) -> list[MemberChecks]:
+    """Keep the working of each check for the member of a section that it is closest for."""
+    worst: dict[tuple[str, str], tuple[float, int]] = {}
+    for each in found:
+        section = result.line.members[each.member].section
+        for check in each.checks:
+            key = check.name, section.name if section else ""
+            worst[key] = max(worst.get(key, (-1.0, 0)), (check.use, -each.member))
+    out = []
+    for each in found:
+        section = result.line.members[each.member].section
+        name = section.name if section else ""
+        checks = tuple(
+            check if worst[check.name, name][1] == -each.member else replace(check, steps=())
+            for check in each.checks
+        )
+        out.append(replace(each, checks=checks))
+    return out
 
 
 def _one(result: LineResult, state: State, units: DisplayUnits) -> list[Markup]:

@@ -62,6 +62,8 @@ def governing_states(
         ):
             if not extreme.source or abs(extreme.value) <= _NOTHING * np.abs(values).max():
                 continue
+            if effect != "shear" and (extreme.value > 0.0) is not largest:
+                continue  # a span that never hogs has no governing hogging
             index = int(np.argmin(np.abs(at.x[member.member] - extreme.x)))
             parts = values[:, member.member, index]
             state = _state(table, extreme, parts, largest=largest)

@@ -17,23 +17,36 @@ NOTE = (
 )
 
 
-def member_checks(
-    name: str, code: str, restraints: str, checks: Sequence[Check], units: DisplayUnits
-) -> Markup:
-    """Return the checks of one member: a table of results, then the working of each."""
-    rows = [_row(check, units) for check in checks]
+def line_checks(
+    members: Sequence[tuple[str, str, str, Sequence[Check]]], units: DisplayUnits
+) -> list[Markup]:
+    """Return the checks of the members of a line: a table of results, then the working.
+
+    ``members``: name, code, how it is held sideways, and its checks.
+    """
+    rows = [(name, *_row(check, units)) for name, _, _, checks in members for check in checks]
+    codes = ", ".join(dict.fromkeys(code.upper() for _, code, _, _ in members if code))
     parts = [
         table(
-            ("Check", "Demand", "Resistance", "Use", "At", "Result", "Clause"),
-            ("", "", "", "", units.symbol("length"), "", ""),
+            ("Member", "Check", "Demand", "Resistance", "Use", "At", "Result", "Clause"),
+            ("", "", "", "", "", units.symbol("length"), "", ""),
             rows,
-            caption=f"Checks of {name}{f' by {code.upper()}' if code else ''}",
-            texts=(0, 5, 6),
-        ),
-        tag("p", f"Held sideways: {restraints}.", class_="verification"),
+            caption=f"Checks{f' by {codes}' if codes else ''}",
+            texts=(0, 1, 6, 7),
+        )
     ]
-    parts += [_working(check, units) for check in checks if check.steps]
-    return tag("div", parts, class_="checks")
+    held: dict[str, list[str]] = {}
+    for name, _, restraints, _ in members:
+        held.setdefault(restraints, []).append(name)
+    sentences = [f"{', '.join(names)}: {restraints}." for restraints, names in held.items()]
+    parts.append(tag("p", "Held sideways. ", " ".join(sentences), class_="verification"))
+    parts += [
+        _working(name, check, units)
+        for name, _, _, checks in members
+        for check in checks
+        if check.steps
+    ]
+    return parts
 
 
 def _row(check: Check, units: DisplayUnits) -> tuple[Markup | str, ...]:
@@ -53,12 +66,13 @@ def _row(check: Check, units: DisplayUnits) -> tuple[Markup | str, ...]:
     )
 
 
-def _working(check: Check, units: DisplayUnits) -> Markup:
+def _working(name: str, check: Check, units: DisplayUnits) -> Markup:
     items = [tag("li", _step(step, units)) for step in check.steps]
     governed = f", {check.source}" if check.source else ""
     closing = tag("p", check.not_covered, class_="verification") if check.not_covered else ""
     return join(
-        tag("p", f"{check.name}{governed}:", class_="working"), tag("ol", items, class_="steps"),
+        tag("p", f"{check.name} of {name}{governed}:", class_="working"),
+        tag("ol", items, class_="steps"),
         closing,
     )  # fmt: skip
 

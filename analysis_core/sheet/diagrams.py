@@ -16,6 +16,7 @@ from analysis_core.units import DisplayUnits
 
 _HALF = 58.0  # pixels of the largest ordinate
 _LABEL = 15.0
+_MANY = 3  # members; of more, every second station is close enough at this size
 
 
 @dataclass(frozen=True, slots=True)
@@ -53,10 +54,11 @@ def diagram(kind: _Kind, envelope: LineEnvelope, at: Strip, units: DisplayUnits)
     largest = max((abs(e.value) for m in members for e in kind.extremes(m)), default=0.0)
     scale = kind.sign * _HALF / largest if largest > 0.0 else 0.0
     axis = _HALF + _LABEL + 4.0
-    parts: list[Markup] = []
-    for index, member in enumerate(members):
-        parts += _areas(kind, member, index, at, axis, scale)
-        parts.append(_line(at.starts[index], axis, at.ends[index], axis, "axis"))
+    parts = [_bound(kind.lower, "lower", members, at, axis, scale)]
+    parts.append(_bound(kind.upper, "upper", members, at, axis, scale))
+    ends = zip(at.starts, at.ends, strict=True)
+    base = " ".join(f"M{_px(a)},{_px(axis)}H{_px(b)}" for a, b in ends)
+    parts.append(tag("path", d=base, class_="axis"))
     for index, member in enumerate(members):
         parts += _labels(kind, member, index, at, axis, scale, largest, units)
     unit = units.symbol(kind.quantity)
@@ -71,21 +73,28 @@ def diagram(kind: _Kind, envelope: LineEnvelope, at: Strip, units: DisplayUnits)
     )  # fmt: skip
 
 
-def _areas(
-    kind: _Kind, member: MemberEnvelope, index: int, at: Strip, axis: float, scale: float
-) -> list[Markup]:
-    """The area between the axis and each bound; the two differ in hatching, not colour alone."""
-    out = []
-    for values, name in ((kind.upper(member), "upper"), (kind.lower(member), "lower")):
+def _bound(
+    values: Callable[[MemberEnvelope], Sequence[float]],
+    name: str,
+    members: Sequence[MemberEnvelope],
+    at: Strip,
+    axis: float,
+    scale: float,
+) -> Markup:
+    """The area between the axis and one bound; the two differ in their stroke, not colour alone."""
+    pieces = []
+    step = 2 if len(members) > _MANY and len(members[0].x) % 2 else 1
+    for index, member in enumerate(members):
         points = [
-            (at.at(index, float(x)), axis + scale * v)
-            for x, v in zip(member.x, values, strict=True)
+            f"{_px(at.at(index, float(x)))},{_px(axis + scale * v)}"
+            for x, v in zip(member.x[::step], values(member)[::step], strict=True)
         ]
-        outline = " ".join(f"{x:.1f},{y:.1f}" for x, y in points)
-        closed = f"M{points[0][0]:.1f},{axis:.1f} L{outline} L{points[-1][0]:.1f},{axis:.1f} Z"
-        out.append(tag("path", d=closed, class_=f"area {name}"))
-        out.append(tag("polyline", points=outline, class_=f"curve {name}"))
-    return out
+        pieces.append(f"M{_px(at.starts[index])},{_px(axis)}L{' '.join(points)}V{_px(axis)}Z")
+    return tag("path", d="".join(pieces), class_=f"area {name}")
+
+
+def _px(value: float) -> str:
+    return f"{value:.1f}".removesuffix(".0")
 
 
 def _labels(
@@ -112,7 +121,3 @@ def _labels(
             )
         )  # fmt: skip
     return out
-
-
-def _line(x1: float, y1: float, x2: float, y2: float, class_: str) -> Markup:
-    return tag("line", x1=x1, y1=y1, x2=x2, y2=y2, class_=class_)

@@ -25,15 +25,13 @@ def fixed_ends(rows: Sequence[tuple[str, ...]], unit: str) -> Markup:
 
 def distribution(shown: RecordTable, closing: str, unit: str) -> Markup:
     """Return one distribution table with its notes."""
-    head = [tag("th", "", scope="col", class_="text")]
+    head = [tag("th", "", scope="col")]
     head += [tag("th", name, scope="col") for name in shown.columns]
     body = []
     for row in shown.rows:
         cells = [tag("td", cell) for cell in row.cells]
         class_ = "quiet" if row.kind in _QUIET else row.kind
-        body.append(
-            tag("tr", tag("th", row.name, scope="row", class_="text"), cells, class_=class_)
-        )
+        body.append(tag("tr", tag("th", row.name, scope="row"), cells, class_=class_))
     parts = [
         tag(
             "table",

@@ -6,10 +6,10 @@ Names in a model are hostile text; nothing of them can become markup, a script o
 from __future__ import annotations
 
 import html
-import unicodedata
 from collections.abc import Iterable
 from dataclasses import dataclass
 
+_NAMES = {"class_": "class", "viewBox": "viewBox"}
 _EMPTY = frozenset({"br", "col", "hr", "img", "meta", "line", "path", "rect", "circle", "polyline"})
 
 
@@ -25,12 +25,11 @@ Content = Markup | str | Iterable["Markup | str"]
 
 def tag(name: str, /, *children: Content, **attributes: str | float | None) -> Markup:
     """Return an element.  ``class_`` stands for class, underscores for hyphens."""
-    shown = "".join(
-        f' {key.rstrip("_").replace("_", "-")}="{_attribute(value)}"'
-        for key, value in attributes.items()
-        if value is not None
-    )
-    inner = "".join(text_of(child) for child in children)
+    shown = ""
+    for key, value in attributes.items():
+        if value is not None:
+            shown += f' {_NAMES.get(key) or key.replace("_", "-")}="{_attribute(value)}"'
+    inner = "".join([text_of(child) for child in children])
     if name in _EMPTY and not inner:
         return Markup(f"<{name}{shown}/>")
     return Markup(f"<{name}{shown}>{inner}</{name}>")
@@ -41,8 +40,10 @@ def text_of(content: Content) -> str:
     if isinstance(content, Markup):
         return content.text
     if isinstance(content, str):
+        if content.isalnum() and content.isascii():  # most cells are words and numbers
+            return content
         return html.escape(visible(content), quote=False)
-    return "".join(text_of(item) for item in content)
+    return "".join([text_of(item) for item in content])
 
 
 def join(*items: Content) -> Markup:
@@ -52,11 +53,9 @@ def join(*items: Content) -> Markup:
 
 def visible(text: str) -> str:
     """Replace characters that would hide or reorder text by their code."""
-    hidden = ("Cc", "Cf", "Cs", "Co", "Zl", "Zp")
-    return "".join(
-        c if unicodedata.category(c) not in hidden or c == "\n" else f"\\u{ord(c):04x}"
-        for c in text
-    )
+    if text.isascii() and text.isprintable():
+        return text
+    return "".join(c if c.isprintable() or c in " \n\xa0" else f"\\u{ord(c):04x}" for c in text)
 
 
 def _attribute(value: str | float) -> str:

@@ -18,28 +18,20 @@ def table(
 ) -> Markup:
     """Return a table; columns in ``texts`` are set left, the others are numbers, set right."""
 
-    def kind(column: int) -> str | None:
-        return "text" if column in texts else None
-
-    heads = [tag("th", cell, scope="col", class_=kind(i)) for i, cell in enumerate(head)]
-    top = [tag("tr", heads)]
+    top = [tag("tr", [tag("th", cell, scope="col") for cell in head])]
     if any(units):
-        below = [tag("td", cell, class_=kind(i)) for i, cell in enumerate(units)]
-        top.append(tag("tr", below, class_="units"))
-    body = [tag("tr", [_cell(c, i, kind(i)) for i, c in enumerate(row)]) for row in rows]
+        top.append(tag("tr", [tag("td", cell) for cell in units], class_="units"))
+    body = [
+        tag("tr", tag("th", row[0], scope="row"), [tag("td", c) for c in row[1:]]) for row in rows
+    ]
+    left = " ".join(f"t{column}" for column in texts if column)
     return tag(
         "table",
         tag("caption", caption),
         tag("thead", top),
         tag("tbody", body),
-        class_=class_ or None,
+        class_=f"{left} {class_}".strip() or None,
     )
-
-
-def _cell(content: Content, column: int, class_: str | None) -> Markup:
-    if column == 0:
-        return tag("th", content, scope="row", class_=class_)
-    return tag("td", content, class_=class_)
 
 
 def facts(pairs: Sequence[tuple[Content, Content]]) -> Markup:
