@@ -18,11 +18,12 @@ from typing import Literal
 from analysis_core.errors import IfcReadError, IfcWriteError
 from analysis_core.findings import Finding
 from analysis_core.ifc import append, atomic, clearing
+from analysis_core.ifc.analysis_model_out import write_analysis_model
 from analysis_core.ifc.container import Container, read_container
 from analysis_core.ifc.diagrams import DiagramWriter
 from analysis_core.ifc.find_elements import find_elements
 from analysis_core.ifc.governing import ElementEffects, Part, element_effects, element_parts
-from analysis_core.ifc.measures import measures
+from analysis_core.ifc.measures import file_units, measures
 from analysis_core.ifc.owner import owner_history
 from analysis_core.ifc.property_sets import (
     DIAGRAMS,
@@ -103,6 +104,7 @@ def post(
     """
     tell = progress or _silent
     job = _Job(outcome, only, stations, computed_at or datetime.now(UTC), tell)
+    job.analysis_model = analysis_model
     source = Path(source_path)
     with atomic.writing_to(target_path) as target:
         guard = _Guard(source, target)
@@ -146,6 +148,7 @@ class _Job:
         self._stations = stations
         self._moment = moment
         self._tell = tell
+        self.analysis_model = False
         self._findings: list[Finding] = []
         self._only = only
         self._parts = element_parts(outcome)
@@ -160,6 +163,8 @@ class _Job:
         self._tell("Posting", 0.2)
         index = StepIndex(cleared.base)
         _check(index, name)
+        if self.analysis_model:
+            index = StepIndex(self._with_model(index, name))
         self._findings += _file_findings(index, stored, self._outcome, cleared, name)
         elements, findings = find_elements({**self._parts, **self._supports}, index)
         self._findings += findings
@@ -174,6 +179,26 @@ class _Job:
         new = [cleared.kept, *lines.chunks()]
         report = self._report(cleared, new, sets.written, count)
         return append.with_block(index, new, append.RESULTS), report
+
+    def _with_model(self, index: StepIndex, name: str) -> bytes:
+        """Return the file with the idealisation as an analysis model, in a block of its own."""
+        lines = [result.line for result in self._outcome.lines]
+        wanted = [member.element for line in lines for member in line.members]
+        wanted += [joint.element or "" for line in lines for joint in line.joints]
+        elements, _ = find_elements(dict.fromkeys(filter(None, wanted)), index)
+        if any(index.kind(n).startswith("IFCSTRUCTURAL") for n in elements.values()):
+            self._findings.append(_has_model(name))
+            return index.data
+        index = StepIndex(clearing.cleared_of_all(index.data, append.MODEL).base)
+        if index.instances_of("IFCSTRUCTURALANALYSISMODEL"):
+            self._findings.append(_has_model(name))
+            return index.data
+        written = append.Lines(append.first_free(index), index.newline)
+        self._findings += write_analysis_model(
+            self._outcome, elements, index, written,
+            owner=owner_history(index, written), units=file_units(index),
+        )  # fmt: skip
+        return b"".join(append.with_block(index, written.chunks(), append.MODEL))
 
     def _restrict(self, only: frozenset[str]) -> None:
         """Keep the elements of some lines, and what these bear on."""
@@ -314,6 +339,14 @@ def _file_findings(
             )
         )
     return findings
+
+
+def _has_model(name: str) -> Finding:
+    return Finding(
+        "note",
+        "analysis-model-there",
+        f"'{name}' has an analysis model already; none was added to it.",
+    )
 
 
 def _not_finite(element: str, mark: str | None) -> Finding:

@@ -3,6 +3,7 @@
 import ifcopenshell
 import ifcopenshell.validate
 import pytest
+from lopsided_line import line_of, outcome_for
 from posting_makers import (
     ANALYSIS,
     BEAM,
@@ -47,6 +48,15 @@ def test_result_groups_are_valid(tmp_path, schema):
     supports = (ANALYSIS["start"], ANALYSIS["end"])
     results = outcome_of(span_result(ANALYSIS["member"], supports=supports))
     writer.post(path, path, with_case_ids(results, {"G": ANALYSIS["case"]}))
+
+    assert complaints(path) == []
+
+
+@pytest.mark.parametrize("schema", SCHEMAS)
+def test_the_analysis_model_is_valid(tmp_path, schema):
+    path = tmp_path / "model.ifc"
+    path.write_bytes(small_model(schema))
+    writer.post(path, path, outcome_for(line_of((0.6, 0.8, 0.0))), analysis_model=True)
 
     assert complaints(path) == []
 
