@@ -139,7 +139,7 @@ def test_distribution_agrees_on_random_structures(build, seed: int):
 
 
 def test_many_lines_of_several_patterns_are_checked_in_their_order():
-    lines = [random_lines.beam_line(seed) for seed in range(300)]
+    lines = [random_lines.beam_line(seed) for seed in range(150)]
     solutions = [
         s for line in lines if isinstance(s := _outcome(solve_stiffness, line), LineSolution)
     ]
@@ -149,7 +149,7 @@ def test_many_lines_of_several_patterns_are_checked_in_their_order():
 
     found = largest_differences(solutions)
 
-    assert len(found) == len(solutions) > 250
+    assert len(found) == len(solutions) > 120
     for place, value in enumerate(found):
         if place in spoilt:
             assert value == pytest.approx(spoilt[place], rel=1e-4)
