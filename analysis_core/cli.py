@@ -153,6 +153,17 @@ def _post_options(commands: Any) -> None:
     where.add_argument(
         "--in-place", action="store_true", help="replace the model itself, all at once"
     )
+    what = command.add_mutually_exclusive_group()
+    what.add_argument(
+        "--analysis-model",
+        action="store_true",
+        help="write the idealisation too, as an analysis model for others to take over",
+    )
+    what.add_argument(
+        "--remove",
+        action="store_true",
+        help="take everything out that was posted, and solve nothing",
+    )
     command.add_argument(
         "--stations", type=_station_count, default=21, metavar="N", help=argparse.SUPPRESS
     )
@@ -234,18 +245,46 @@ def _balance(options: argparse.Namespace) -> int:
 
 
 def _post(options: argparse.Namespace) -> int:
-    settings = _settings(options)
     target = Path(options.model if options.in_place else options.output)
+    if options.remove:
+        return _take_out(options.model, target)
+    settings = _settings(options)
     found = pipeline.survey(options.model, settings, progress=_progress(), only=options.line)
     outcome = pipeline.solve(found, settings, progress=_progress())
     chosen = pipeline.of_lines(outcome, options.line)
     _put(options, lambda: pipeline.document(chosen, stations=options.stations), "")
-    _post_to(outcome, options.model, target, only=options.line)
+    _post_to(
+        outcome, options.model, target, only=options.line, analysis_model=options.analysis_model
+    )
     return _status(chosen)
 
 
-def _post_to(outcome: Outcome, source: str, target: Path, only: Sequence[str] = ()) -> None:
-    report = pipeline.post(outcome, source, target, progress=_progress(), only=only)
+def _take_out(source: str, target: Path) -> int:
+    report = pipeline.remove(source, target)
+    how = (
+        "all other bytes are as they were before"
+        if report.path == "append"
+        else "another program had rewritten the file; nothing else in it was changed"
+    )
+    print(
+        f"Taken out, into '{safe(str(target))}': {report.removed} property sets and what goes "
+        f"with them; {how}.",
+        file=sys.stderr,
+    )
+    return 0
+
+
+def _post_to(
+    outcome: Outcome,
+    source: str,
+    target: Path,
+    only: Sequence[str] = (),
+    *,
+    analysis_model: bool = False,
+) -> None:
+    report = pipeline.post(
+        outcome, source, target, progress=_progress(), only=only, analysis_model=analysis_model
+    )
     notes = findings_text(report.findings)
     print(
         f"Posted into '{safe(str(target))}': {report.written} property sets new, "

@@ -24,7 +24,7 @@ from analysis_core.ifc.posted import Posted, known_marks, read_posted
 from analysis_core.kept_marks import with_kept_marks
 from analysis_core.line_fingerprints import line_bases
 from analysis_core.model import LineModel
-from analysis_core.results import LineResult, Outcome
+from analysis_core.results import LineResult, Outcome, Stations
 from analysis_core.revision import Reconciliation, marks_before
 from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
@@ -34,11 +34,14 @@ from analysis_core.units import display_units
 
 if TYPE_CHECKING:
     from analysis_core.checking import MemberChecks
-    from analysis_core.ifc.writer import PostReport
+    from analysis_core.ifc.writer import PostReport, RemoveReport
     from analysis_core.posted_states import PostedState
     from analysis_core.sheet.html import Markup
 
 Progress = Callable[[str, float], None]
+
+# Section forces along members of an analysis model: at the tenths of each, ends included.
+_SECTION_FORCES = 11
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -229,14 +232,33 @@ def post(
     """Write an outcome into a copy of its model, or the model itself.
 
     ``outcome`` holds all lines; ``only``: marks of those to be written, all where empty.  What was
-    posted for others then stays.  Raises IfcWriteError, JobError.
+    posted for others then stays.  ``analysis_model``: the idealisation too, where the model has
+    none.  Raises IfcWriteError, JobError.
     """
+    from analysis_core.effects.stations import stations
     from analysis_core.ifc import writer  # posting is not always wanted; keep the start quick
+
+    def section_forces(result: LineResult) -> Stations:
+        assert result.solution is not None  # only asked for lines that were solved
+        return stations(result.line, result.solution, _SECTION_FORCES)
 
     _check_marks(outcome.model, only)
     return writer.post(
-        source, target, outcome, analysis_model=analysis_model, only=only, progress=progress
+        source,
+        target,
+        outcome,
+        analysis_model=analysis_model,
+        only=only,
+        stations=section_forces,
+        progress=progress,
     )
+
+
+def remove(source: str | Path, target: str | Path) -> RemoveReport:
+    """Write a copy of a model without anything that was posted.  Raises IfcWriteError."""
+    from analysis_core.ifc import writer
+
+    return writer.remove(source, target)
 
 
 def checks(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks, ...]]:
