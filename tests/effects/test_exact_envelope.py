@@ -8,9 +8,16 @@ import numpy as np
 import pytest
 from small_solver import FIXED, PIN, beam_line, solve
 
-from analysis_core.effects.arrangements import Arrangements, PatternRule, split_by_span, whole_cases
+from analysis_core.effects.arrangements import (
+    Arrangements,
+    Part,
+    PatternRule,
+    split_by_span,
+    whole_cases,
+)
 from analysis_core.effects.combinations import combine, combine_line
 from analysis_core.effects.envelopes import envelope, envelopes
+from analysis_core.effects.factors import factor_table
 from analysis_core.effects.stations import stations
 from analysis_core.model import (
     Combination,
@@ -416,3 +423,87 @@ def test_a_simple_beam_hogs_nowhere_and_says_so_at_its_start():
 
     assert (found.hogging.value, found.hogging.x) == (0.0, 0.0)
     assert (found.deflection_up.value, found.deflection_up.x) == (0.0, 0.0)
+
+
+@pytest.mark.parametrize("sign", [1.0, -1.0])
+def test_a_part_that_turns_adverse_only_between_two_stations(sign):
+    # G: 4 t (1 - t), 1 at the middle.  Q: 3 ((t - 0.5)^2 - 0.0004), adverse but within 0.02 of the
+    # middle; there it is left out.
+    q = 3.0
+    end = q * (0.25 - 0.0004)
+    whole, solution = pinned_with(
+        DistributedForce("G", 0, 0.0, 1.0, (sign * 8.0,)),
+        DistributedForce("Q", 0, 0.0, 1.0, (-sign * 2.0 * q,)),
+        JointForce("Q", 0, moment=sign * end),
+        JointForce("Q", 1, moment=-sign * end),
+    )
+    both = [Combination("U1", "strength", {"G": 1.0, "Q": 1.0}, favourable={"Q": 0.0})]
+
+    (found,) = envelope(whole, solution, both, limit_state="strength").members
+
+    extreme = found.sagging if sign > 0 else found.hogging
+    assert (extreme.value, extreme.x) == pytest.approx((sign, 0.5), rel=1e-12)
+    assert extreme.source == "U1 (without Q)"
+
+
+def three_spans(loaded):
+    actions = [DistributedForce("Q", i, 0.0, 5.0, (8e3,)) for i in loaded]
+    return beam_line([5.0] * 3, [1e7] * 3, [PIN] * 4, actions)
+
+
+def test_lines_alike_but_for_where_the_parts_stand_keep_their_own_arrangements():
+    listed = Arrangements("x", {"Q": 0.0}, listed=(PatternRule(("Q",), ("alternate",)),))
+    split = [split_by_span(three_spans(loaded), ["Q"], ["Q"]) for loaded in ((0, 1), (1, 2))]
+    solutions = [solve(s.line, s.cases) for s in split]
+    q = [Combination("U1", "strength", {"Q": 1.5}, favourable={"Q": 0.0})]
+
+    for arrangements in (listed, EVERY):
+        together = envelopes(split, solutions, q, limit_state="strength", arrangements=arrangements)
+        for s, solution, found in zip(split, solutions, together, strict=True):
+            alone = envelope(s, solution, q, limit_state="strength", arrangements=arrangements)
+            assert [m.sagging for m in found.members] == [m.sagging for m in alone.members]
+            assert found.reactions == alone.reactions
+
+
+def test_parts_handed_down_keep_their_names_where_lines_are_alike():
+    def carrying(mark):
+        names = {n: Part(f"Q @ {mark} span {n}", "Q", f"{mark} span {n}", 1) for n in (1, 2)}
+        forces = [PointForce(p.name, 0, 1.0 + n, 10e3) for n, p in names.items()]
+        forces.append(DistributedForce("Q", 1, 0.0, 5.0, (4e3,)))
+        line = beam_line([5.0, 5.0], [1e7] * 2, [PIN] * 3, forces, mark=f"on {mark}")
+        known = {part.name: part for part in names.values()}
+        return split_by_span(line, ["Q"], ["Q"], known=known)
+
+    split = [carrying("A-1"), carrying("B-2")]
+    q = [Combination("U1", "strength", {"Q": 1.5}, favourable={"Q": 0.0})]
+
+    found = envelopes(
+        split, [solve(s.line, s.cases) for s in split], q, limit_state="strength",
+        arrangements=EVERY,
+    )  # fmt: skip
+
+    for one, mark in zip(found, ("A-1", "B-2"), strict=True):
+        first, second = one.members
+        assert first.sagging.source == f"U1 (Q on {mark} span 1, {mark} span 2)"
+        assert second.sagging.source == "U1 (Q on span 2)"
+        assert first.hogging.source == "U1 (Q on all spans)"
+
+
+def test_a_part_without_influence_is_not_named():
+    parts = tuple(Part(f"Q @ span {n}", "Q", f"span {n}", n) for n in (1, 2, 3))
+    q = [Combination("U1", "strength", {"Q": 1.5}, favourable={"Q": 0.0})]
+    table = factor_table(q, parts, EVERY, (1, 2, 3))
+
+    (source,) = table.sources(
+        np.array([0]), np.array([[5.0e3], [1e-9], [-2.0e3]]), [parts], largest=True
+    )
+
+    assert source == "U1 (Q on span 1)"
+
+
+def test_an_action_on_a_joint_belongs_to_the_span_on_its_left():
+    line = beam_line([5.0] * 2, [1e7] * 2, [PIN] * 3, [JointForce("Q", 1, moment=3e3)])
+
+    (part,) = split_by_span(line, ["Q"], ["Q"]).parts
+
+    assert (part.name, part.place, part.span) == ("Q @ span 1", "span 1", 1)

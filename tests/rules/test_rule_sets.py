@@ -32,6 +32,8 @@ def test_the_project_replaces_a_national_value_and_it_is_marked():
 
     assert {"G": 1.24875, "Q": 1.5, "S": 0.9} in found  # 0.925 * 1.35, 1.5 * 0.6
     assert rule_set.figures["xi"].replaced == 0.85
+    assert rule_set.figures["xi"].confirmed
+    assert not rule_set.figures["gamma_Q"].confirmed
     assert "in the rule set 0.85" in rules.describe(rule_set)
 
 
