@@ -427,15 +427,15 @@ def test_a_simple_beam_hogs_nowhere_and_says_so_at_its_start():
 
 @pytest.mark.parametrize("sign", [1.0, -1.0])
 def test_a_part_that_turns_adverse_only_between_two_stations(sign):
-    # G: 4 t (1 - t), 1 at the middle.  Q: 3 ((t - 0.5)^2 - 0.0004), adverse but within 0.02 of the
-    # middle; there it is left out.
+    # G: 4 t (1 - t), 1 at the middle.  Q: 3 ((t - 0.5)^2 - 0.0004) + 0.02 (t - 0.5), adverse but
+    # within about 0.02 of the middle; there it is left out.
     q = 3.0
     end = q * (0.25 - 0.0004)
     whole, solution = pinned_with(
         DistributedForce("G", 0, 0.0, 1.0, (sign * 8.0,)),
         DistributedForce("Q", 0, 0.0, 1.0, (-sign * 2.0 * q,)),
-        JointForce("Q", 0, moment=sign * end),
-        JointForce("Q", 1, moment=-sign * end),
+        JointForce("Q", 0, moment=sign * (end - 0.01)),
+        JointForce("Q", 1, moment=-sign * (end + 0.01)),
     )
     both = [Combination("U1", "strength", {"G": 1.0, "Q": 1.0}, favourable={"Q": 0.0})]
 
