@@ -2,9 +2,9 @@
 
     python tests/benchmarks/bench_check.py [LINES]
 
-Medians of five in one run, in processor time; building and solving the lines is outside the timed part of the
-check.  "Plain" lines are checked together by their pattern; "haunched" ones need quadrature;
-floors with columns have redundant axial forces; the long line is solved by bands.
+Medians of five in one run, in processor time; building and solving the lines is outside the
+timed part of the check.  "Plain" lines are checked together by their pattern; "haunched" ones
+need quadrature; floors with columns have redundant axial forces; the long line goes alone.
 """
 
 from __future__ import annotations
