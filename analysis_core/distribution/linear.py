@@ -37,10 +37,11 @@ def solve_symmetric(matrix: Long, right: Long, sizes: Long) -> tuple[Long, float
         if ratios[best] <= 0:
             continue
         order.append(pivot)
-        if waiting:
-            factors = work[waiting, pivot] / work[pivot, pivot]
-            work[waiting] -= factors[:, None] * work[pivot]
-            answer[waiting] -= factors[:, None] * answer[pivot]
+        touched = [row for row in waiting if work[row, pivot]]
+        if touched:
+            factors = work[touched, pivot] / work[pivot, pivot]
+            work[touched] -= factors[:, None] * work[pivot]
+            answer[touched] -= factors[:, None] * answer[pivot]
     solution = np.zeros_like(answer)
     for place in range(len(order) - 1, -1, -1):
         pivot, after = order[place], order[place + 1 :]

@@ -110,4 +110,3 @@ def is_free(joint: Joint) -> bool:
     """Whether nothing but its members holds a joint."""
     support = joint.support
     return support is None or not (support.vertical or support.horizontal or support.rotation)
-

@@ -117,14 +117,15 @@ def translation_sizes(frame: Skeleton, locked: Long, swayed: Long) -> tuple[Long
     for joint in frame.joints:
         stiffness = holds(frame.line.joints[joint])
         for direction, key in enumerate(("horizontal", "vertical")):
-            shift, spring = modes[:, joint, direction], stiffness[key]
+            moving = np.flatnonzero(modes[:, joint, direction])
+            shift, spring = modes[moving, joint, direction], stiffness[key]
             push = frame.tails.forces[joint, direction].astype(np.longdouble)
             if 0.0 < spring < RIGID:
-                resistance += spring * np.multiply.outer(shift, shift)
-                most += spring * shift**2
+                resistance[np.ix_(moving, moving)] += spring * np.multiply.outer(shift, shift)
+                most[moving] += spring * shift**2
                 ground = frame.loads.movements[joint, direction]
                 push = push + spring * (ground - frame.moves.given[joint, direction])
-            work += np.multiply.outer(shift, push)
+            work[moving] += np.multiply.outer(shift, push)
     sizes, weakest = solve_symmetric((resistance + resistance.T) / 2, work, most)
     return sizes, weakest if np.all(most > 0) else 0.0
 

@@ -151,7 +151,7 @@ def _inclined(
                 if root in fixed:
                     value = value - factor * fixed[root]
                 else:
-                    row[root] = row.get(root, 0.0) + factor
+                    row[root] = factor  # ends of a sloping bar share no movement
         rows.append(row)
         known.append(value)
     return rows, known
