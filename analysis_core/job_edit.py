@@ -25,6 +25,12 @@ def entries(text: str, section: str) -> list[Any]:
     return list(found) if isinstance(found, list) else []
 
 
+def stated(text: str, section: str, key: str) -> Any:
+    """Return one value of a section as plain data; None where it is not stated."""
+    found = _data(text).get(section)
+    return found.get(key) if isinstance(found, dict) else None
+
+
 def with_entry(text: str, section: str, entry: Mapping[str, Any]) -> str:
     """Return the text with an entry added at the end of a list."""
     wanted = _data(text)

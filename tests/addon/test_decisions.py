@@ -144,3 +144,17 @@ def test_a_decision_that_is_not_understood_changes_nothing(tmp_path):
         session.decide("A", "titel: A\n")
 
     assert not session.job_path.exists()
+
+
+def test_redistribution_is_stated_per_line_and_taken_back():
+    text = decisions.decide_rules("", "en-1990")
+    text = decisions.decide_redistribution(text, "L1", "15 %")
+    text = decisions.decide_redistribution(text, "L2", "10")
+    text = decisions.decide_redistribution(text, "L1", "20")
+
+    found = {r.on.line: r.fraction for r in job.parse(text).rules.redistribution}
+    assert found == {"L1": pytest.approx(0.20), "L2": pytest.approx(0.10)}
+    text = decisions.decide_redistribution(text, "L2", "0 %")
+    assert [r.on.line for r in job.parse(text).rules.redistribution] == ["L1"]
+    with pytest.raises(JobError, match="no part"):
+        decisions.decide_redistribution(text, "L1", "much")

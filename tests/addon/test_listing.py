@@ -6,6 +6,7 @@ import demo
 import pytest
 
 from analysis_core.findings import Finding
+from analysis_core.posted_states import PostedState
 from analysis_core.units import display_units
 from freecad.spanledger.present.findings import counts_words, finding_rows, matching
 from freecad.spanledger.present.listing import GLYPHS, STATES, grouped, rows_of
@@ -41,6 +42,7 @@ def test_lines_stand_under_their_storey_with_governing_values(outcome):
     assert groups[0].rows[0].texts == (
         "L1", f"{GLYPHS['balanced']} balanced", "2", "35.04", "-42.00", "-43.00",
         UNITS.number(groups[0].rows[0].values[3], "deflection"),
+        "–",
     )  # fmt: skip
 
 
@@ -65,6 +67,10 @@ def test_states_tell_what_the_engineer_has_to_do(outcome):
     states = [row.state for row in rows_of(broken, UNITS, posted={"result-L2"})]
 
     assert states == ["needs a decision", "posted"]
+    in_file = {"L1": PostedState("current"), "L2": PostedState("stale", ("a load changed",))}
+    rows = rows_of(outcome, UNITS, in_file=in_file)
+    assert [row.state for row in rows] == ["posted", "stale"]
+    assert rows[1].reason == "a load changed"
     assert {row.state for row in rows_of(outcome, UNITS, stale=True)} == {"stale"}
     assert rows_of(broken, UNITS)[0].texts[3] == "–"
 
@@ -116,3 +122,12 @@ def test_what_moved_is_told_for_the_line_in_hand_and_counted_for_others(outcome)
     assert moved_words(outcome, changed, "L1", UNITS) == "L1: sagging 35.04 → 40.00 kN·m."
     assert moved_words(outcome, changed, "L2", UNITS) == "1 other line changed: L1."
     assert moved_words(outcome, outcome, "L1", UNITS) == "No governing effect changed."
+
+
+def test_lines_are_sorted_by_use_of_capacity_once_that_is_known(outcome):
+    rows = rows_of(outcome, UNITS, uses={"L2": 0.83})
+
+    assert [row.texts[-1] for row in rows] == ["–", "83 %"]
+    first = grouped(rows, column=7, descending=True)
+    assert [group.rows[0].mark for group in first] == ["L1", "L2"]  # each in its storey
+    assert rows[1].values[-1] == 0.83

@@ -4,6 +4,7 @@ from dataclasses import replace
 
 import demo
 import pytest
+
 from analysis_core.units import display_units
 from freecad.spanledger.present.posting import preview
 

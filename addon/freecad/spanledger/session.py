@@ -6,7 +6,7 @@ these texts, so that nothing else has to be reversible.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
 from pathlib import Path
@@ -19,9 +19,13 @@ from analysis_core.settings import Settings
 from analysis_core.units import DisplayUnits, display_units
 
 if TYPE_CHECKING:
+    from analysis_core.checking import MemberChecks
     from analysis_core.ifc.shapes import BuildingShape
     from analysis_core.pipeline import Reading
+    from analysis_core.posted_states import PostedState
     from analysis_core.revision import Reconciliation
+
+    Checks = tuple[MemberChecks, ...]
     from analysis_core.solving import Memory
 
 
@@ -50,6 +54,11 @@ class Session:
     """What stands in the file; kept so that a decision need not read it again."""
     stamp: tuple[int, int] | None = None
     memory: Memory | None = None
+    in_file: Mapping[str, PostedState] = field(default_factory=dict)
+    """By mark whether the results that stand in the file hold."""
+    checks: dict[str, Checks] = field(default_factory=dict)
+    """The checks of members by mark; empty until they were made."""
+    _checked: dict[tuple[str, str], Checks] = field(default_factory=dict)
     shape: BuildingShape | None = None
     """The bodies of the building, once they were made."""
     done: list[Decision] = field(default_factory=list)
@@ -131,7 +140,41 @@ class Session:
         survey = pipeline.idealised(reading, settings)
         outcome = pipeline.solve(survey, settings, progress=progress, memory=memory)
         self.reading, self.stamp, self.memory = reading, stamp, memory
+        self.in_file = pipeline.posted_states(survey, settings)
         return outcome
+
+    def check(
+        self, outcome: Outcome, settings: Settings, progress: Callable[[str, float], None]
+    ) -> dict[str, Checks]:
+        """Check the members of every line, those that did not change by what is known of them.
+
+        May be called in another thread; raises JobError, and whatever ``progress`` raises.
+        """
+        from analysis_core.checking import check_line
+
+        found: dict[str, Checks] = {}
+        known, said = self._checked, _said_of_checks(settings)
+        for done, result in enumerate(outcome.lines):
+            progress("Checking", done / len(outcome.lines))
+            if result.status != "balanced":
+                continue
+            key = result.fingerprint, said
+            if not result.fingerprint or key not in known:
+                known[key] = tuple(check_line(result, outcome.model, settings))
+            found[result.line.mark] = known[key]
+        self._checked = {
+            (result.fingerprint, said): found[result.line.mark]
+            for result in outcome.lines
+            if result.line.mark in found
+        }
+        return found
+
+    def building(self, progress: Callable[[str, float], None]) -> BuildingShape:
+        """Return the bodies of the building; may be called in another thread."""
+        from analysis_core.ifc.shapes import building_shape
+        from analysis_core.ifc.source import open_model
+
+        return building_shape(open_model(self.path), progress=progress)
 
     def compare(
         self, earlier: Path, settings: Settings, progress: Callable[[str, float], None]
@@ -178,7 +221,7 @@ class Session:
     def receive(self, outcome: Outcome) -> None:
         """Take the outcome of a run."""
         self.previous, self.outcome = self.outcome, outcome
-        self.stale = False
+        self.stale, self.checks = False, {}
 
     def _write(self, text: str) -> None:
         beside = self.job_path.with_name(f".{self.job_path.name}.new")
@@ -202,6 +245,13 @@ def job_beside(path: Path) -> Path:
 @lru_cache(maxsize=8)
 def _parsed(text: str) -> Settings:
     return job.parse(text)
+
+
+def _said_of_checks(settings: Settings) -> str:
+    """What checks depend on beside the fingerprint of a line's effects."""
+    return repr(
+        (settings.rules, settings.materials, settings.sections, settings.limits, settings.checks)
+    )
 
 
 @lru_cache(maxsize=8)

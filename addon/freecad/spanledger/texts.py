@@ -40,6 +40,7 @@ CORE_WORDS = (
     words.noop("Solving"),
     words.noop("Verifying"),
     words.noop("Enveloping"),
+    words.noop("Checking"),
     words.noop("Posting"),
     words.noop("moment"),
 )

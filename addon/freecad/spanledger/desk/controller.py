@@ -10,6 +10,7 @@ import FreeCAD
 import FreeCADGui
 
 from .. import document
+from ..present.checked import largest_uses
 from ..present.listing import Row, rows_of
 from ..present.moved import moved_words
 from ..present.posting import posted_words, preview
@@ -173,6 +174,7 @@ class Desk(QtCore.QObject):
                 session.take_compared(found)
                 self._show_all(name)
                 self.panels.show_changes(found, session)
+                self._look_closer(name, found.after, settings)
 
         self.runs.start(task, done)
 
@@ -315,24 +317,26 @@ class Desk(QtCore.QObject):
             self._show_all(name)
             self._watch()
             self._tell_what_moved(session, title)
-            if session.shape is None:
-                self._make_building(name)
+            self._look_closer(name, outcome, settings)
 
         self.runs.start(task, done)
 
-    def _make_building(self, name: str) -> None:
+    def _look_closer(self, name: str, outcome: Any, settings: Any) -> None:
+        """Check members, and make the bodies of the building, behind everything else."""
         session = self.sessions[name]
 
         def task(progress: Progress) -> Any:
-            from analysis_core.ifc.shapes import building_shape
-            from analysis_core.ifc.source import open_model
+            checks = session.check(outcome, settings, progress)
+            return checks, session.shape or session.building(progress)
 
-            return building_shape(open_model(session.path), progress=progress)
-
-        def done(shape: Any) -> None:
-            if self.sessions.get(name) is session:
-                session.shape = shape
-                self.picture.show_building(name, session)
+        def done(found: Any) -> None:
+            if self.sessions.get(name) is not session or session.outcome is not outcome:
+                return
+            session.checks, session.shape = found
+            self.picture.show_building(name, session)
+            self._show_states(name)
+            if self.session is session and self.line is not None:
+                self.panels.show_spot(session, self.line, self.spot)
 
         self.runs.start_behind(task, done)
 
@@ -385,7 +389,14 @@ class Desk(QtCore.QObject):
             self._shade()
 
     def _rows(self, session: Session) -> list[Row]:
-        return rows_of(session.outcome, session.units, stale=session.stale, posted=session.posted)
+        return rows_of(
+            session.outcome,
+            session.units,
+            stale=session.stale,
+            posted=session.posted,
+            in_file=session.in_file,
+            uses=largest_uses(session.checks),
+        )
 
     def _decide(self, change: Callable[[], Any], title: str) -> None:
         if self.session is None or self.runs.busy:

@@ -5,15 +5,17 @@ A decision is sent as a title and a change of the job file's text; nothing is co
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from typing import Any, get_args
 
+from analysis_core.checking import MemberChecks
 from analysis_core.model import RIGID, Action, Nature
 from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
 from analysis_core.units import DisplayUnits
 
 from ..present import decisions
+from ..present.checked import check_facts, deflection_facts
 from ..present.diagrams import View
 from ..present.inspector import (
     RELEASE_CHOICES,
@@ -64,6 +66,7 @@ class Inspector(QtWidgets.QScrollArea):
         label.setWordWrap(True)
         self._layout.addWidget(label)
         self._rules_form(settings.rules.name)
+        self._redistribution_form(result.line.mark)
         self._cases_form(outcome)
         self._layout.addStretch(1)
 
@@ -83,14 +86,20 @@ class Inspector(QtWidgets.QScrollArea):
         self._layout.addStretch(1)
 
     def show_member(
-        self, result: LineResult, member: int, outcome: Outcome, units: DisplayUnits
+        self,
+        result: LineResult,
+        member: int,
+        outcome: Outcome,
+        checks: Sequence[MemberChecks],
+        units: DisplayUnits,
     ) -> None:
-        """Show a span, how its ends are joined, and a form for one more action."""
+        """Show a span, its checks, how its ends are joined, and forms to decide on it."""
         part = result.line.members[member]
         title = translate("Spanledger", "Span {number} of {mark}")
         number = part.span if part.span is not None else part.id
         self._begin(title.format(number=number, mark=result.line.mark))
         self._facts(member_facts(result, member, dict(outcome.model.names), units))
+        self._facts(deflection_facts(result, member, units) + check_facts(checks, member))
         for at_end, spring in ((False, part.start_spring), (True, part.end_spring)):
             where = decisions.end_of(result.line, member, at_end=at_end)
             if where is not None:
@@ -144,6 +153,23 @@ class Inspector(QtWidgets.QScrollArea):
             name = rules.currentData()
             title = translate("Spanledger", "Combined by {rules}").format(rules=name)
             self.decided.emit(title, lambda text: decisions.decide_rules(text, name))
+
+        apply.clicked.connect(decide)
+
+    def _redistribution_form(self, mark: str) -> None:
+        tip = translate("Spanledger", "Part of the support moments, 0 % for none")
+        part = entry("SpanledgerRedistribution", hint="15 %", tip=tip)
+        apply = button("SpanledgerDecideRedistribution", translate("Spanledger", "Redistribute"))
+        form = self._form(translate("Spanledger", "Moment redistribution"))
+        form.addRow(translate("Spanledger", "Part"), part)
+        form.addRow(apply)
+
+        def decide() -> None:
+            title = translate("Spanledger", "Moments of {mark} redistributed").format(mark=mark)
+            words = part.text()
+            self.decided.emit(
+                title, lambda text: decisions.decide_redistribution(text, mark, words)
+            )
 
         apply.clicked.connect(decide)
 

@@ -130,7 +130,12 @@ def _scrolled(widget: Any) -> Any:
     return area
 
 
-_WAYS = {"plain": noop("alike"), "state": noop("by state"), "change": noop("by change")}
+_WAYS = {
+    "plain": noop("alike"),
+    "state": noop("by state"),
+    "change": noop("by change"),
+    "use": noop("by use"),
+}
 _KINDS = {
     "envelope": noop("Envelope"),
     "combination": noop("Combination"),

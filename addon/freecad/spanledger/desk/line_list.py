@@ -89,6 +89,8 @@ class LineModel(QtCore.QAbstractItemModel):
             group = self._groups[index.row()]
             return f"{group.storey} ({len(group.rows)})" if column == 0 else None
         row = self._groups[index.internalId() - 1].rows[index.row()]
+        if role == Qt.ItemDataRole.ToolTipRole and column == 1 and row.reason:
+            return row.reason
         if column == 1:
             return f"{GLYPHS[row.state]} {tr(row.state)}"
         return row.texts[column]

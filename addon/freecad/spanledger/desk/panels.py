@@ -44,6 +44,8 @@ class Panels:
         self.bearings = BearingsList()
         self.tabs.addTab(self.bearings, translate("Spanledger", "Reactions"))
         self.changes = ChangesList()  # becomes a tab once revisions are compared
+        self._session: Session | None = None
+        self.tabs.currentChanged.connect(lambda _index: self._show_bearings())
         self.list_dock = _dock(
             window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
             _stacked(self.tabs, self.running), Qt.DockWidgetArea.RightDockWidgetArea,
@@ -89,9 +91,16 @@ class Panels:
         self.list.show_rows(rows, session.units)
         found = finding_rows(session.outcome)
         self.findings.show_rows(found)
-        self.bearings.show_rows(bearing_rows(session.outcome, session.units), session.units)
+        self._session = session
+        self._show_bearings()
         title = translate("Spanledger", "Findings ({count})").format(count=len(found))
         self.tabs.setTabText(1, title)
+
+    def _show_bearings(self) -> None:
+        """Fill the list of reactions when it is looked at; it may hold tens of thousands."""
+        session = self._session
+        if session is not None and self.tabs.currentWidget() is self.bearings:
+            self.bearings.show_rows(bearing_rows(session.outcome, session.units), session.units)
 
     def show_changes(self, found: Any, session: Session) -> None:
         """Show what changed since an earlier revision."""
@@ -138,7 +147,8 @@ class Panels:
             inspector.show_joint(result, number, view, outcome, units)
             inspector.show_paths(paths_at_joint(outcome, line, number))
         elif kind == "member" and number < len(result.line.members):
-            inspector.show_member(result, number, outcome, units)
+            checks = session.checks.get(result.line.mark, ())
+            inspector.show_member(result, number, outcome, checks, units)
             inspector.show_paths(paths_on_member(outcome, line, number, units))
         elif kind == "action" and number < len(result.line.actions):
             action = result.line.actions[number]
@@ -153,6 +163,7 @@ class Panels:
         units = display_units()
         self.list.show_rows([], units)
         self.findings.show_rows([])
+        self._session = None
         self.bearings.show_rows([], units)
         if self.tabs.indexOf(self.changes) >= 0:
             self.tabs.removeTab(self.tabs.indexOf(self.changes))

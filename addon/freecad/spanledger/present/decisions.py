@@ -11,7 +11,14 @@ from dataclasses import dataclass
 from typing import Any
 
 from analysis_core.errors import JobError
-from analysis_core.job_edit import entries, with_entry, with_replaced, with_value, without_entry
+from analysis_core.job_edit import (
+    entries,
+    stated,
+    with_entry,
+    with_replaced,
+    with_value,
+    without_entry,
+)
 from analysis_core.model import Line
 from analysis_core.units import DisplayUnits, parse_quantity
 
@@ -139,6 +146,21 @@ def decide_section(text: str, element: str, values: Mapping[str, str]) -> str:
 def decide_rules(text: str, name: str) -> str:
     """Take another rule set."""
     return with_value(text, "rules", "set", name)
+
+
+def decide_redistribution(text: str, mark: str, part: str) -> str:
+    """Redistribute a part of the support moments of a line; "0 %" takes it back."""
+    typed = part.strip().replace(",", ".")
+    number = typed.removesuffix("%").strip()
+    try:
+        share = float(number)
+    except ValueError:
+        raise JobError(f"'{part}' is no part of a moment; state one such as '15 %'.") from None
+    target = {"line": mark}
+    kept = [e for e in stated(text, "rules", "redistribution") or [] if e.get("on") != target]
+    if share:
+        kept.append({"on": target, "fraction": f"{number} %"})
+    return with_value(text, "rules", "redistribution", kept)
 
 
 def decide_nature(text: str, case: str, nature: str) -> str:

@@ -317,13 +317,26 @@ def _band(
             for run in _runs(drawing, curve.x, values, base, scale):
                 drawing.strokes.append(Stroke(run, "before", 1.3, dashed=True))
     _curve(drawing, curve, base, scale)
+    if curve.redistributed is not None:
+        for values in curve.redistributed:
+            for run in _runs(drawing, curve.x, values, base, scale):
+                drawing.strokes.append(Stroke(run, "ink", 1.4, dashed=True))
+        drawing.words.append(
+            Words(drawing.width - 8.0, top + 12.0, say("dashed: redistributed"), "ink", "right",
+                  small=True)
+        )  # fmt: skip
+    elif curve.before is not None:
+        drawing.words.append(
+            Words(drawing.width - 8.0, top + 12.0, say("dashed: before"), "before", "right",
+                  small=True)
+        )  # fmt: skip
     _peaks(drawing, curve, base, scale, top, height, measure)
 
 
 def _scale(curve: Curve, top: float, room: float) -> tuple[float, float]:
     """Return the pixel of zero and pixels per unit, downward positive."""
     sign = 1.0 if DOWNWARD[curve.quantity] else -1.0
-    parts = [curve.lower, curve.upper, *(curve.before or ())]
+    parts = [curve.lower, curve.upper, *(curve.before or ()), *(curve.redistributed or ())]
     values = sign * np.concatenate([p[~np.isnan(p)] for p in parts])
     least, most = min(float(values.min(initial=0.0)), 0.0), max(float(values.max(initial=0.0)), 0.0)
     if most - least == 0.0:

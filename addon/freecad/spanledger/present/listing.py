@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Sequence
+from collections.abc import Collection, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Literal
 
+from analysis_core.posted_states import PostedState
 from analysis_core.results import LineResult, Outcome
 from analysis_core.units import DisplayUnits
 
@@ -21,6 +22,8 @@ GLYPHS: dict[str, str] = {
     noop("stale"): "◐",
     noop("posted"): "■",
 }
+_NOTHING_POSTED: Mapping[str, PostedState] = {}
+_NO_USES: Mapping[str, float] = {}
 NO_STOREY = noop("No storey")
 COLUMNS = (
     noop("Line"),
@@ -30,8 +33,9 @@ COLUMNS = (
     noop("Hogging"),
     noop("Shear"),
     noop("Deflection"),
+    noop("Use"),
 )
-QUANTITY_OF = ("", "", "", "moment", "moment", "force", "deflection")
+QUANTITY_OF = ("", "", "", "moment", "moment", "force", "deflection", "")
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,10 +47,13 @@ class Row:
     storey: str
     state: State
     spans: int
-    values: tuple[float | None, float | None, float | None, float | None]
+    values: tuple[float | None, ...]
+    """Sagging, hogging, shear, deflection, and the largest use of capacity."""
     texts: tuple[str, ...]
     search: str
     """What the filter looks through, in lower case."""
+    reason: str = ""
+    """Why the line is in its state, where there is more to say."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -63,17 +70,23 @@ def rows_of(
     *,
     stale: bool = False,
     posted: Collection[str] = (),
+    in_file: Mapping[str, PostedState] = _NOTHING_POSTED,
+    uses: Mapping[str, float] = _NO_USES,
 ) -> list[Row]:
     """Return a row per line.
 
     ``stale``: the model or the decisions changed since the run.  ``posted`` are the fingerprints
-    of the results that were written into a file.
+    of the results that were written into a file since, ``in_file`` what stood in the model by
+    mark.  ``uses``: the largest use of capacity by mark.
     """
-    undecided = {f.line for f in outcome.findings if f.severity == "error" and f.line}
-    return [
-        _row(index, result, units, _state(result, result.line.mark in undecided, stale, posted))
-        for index, result in enumerate(outcome.lines)
-    ]
+    rows = []
+    for index, result in enumerate(outcome.lines):
+        mark = result.line.mark
+        stands = in_file.get(mark)
+        state = _state(result, stale, posted, stands)
+        reason = "\n".join(stands.reasons) if state == "stale" and stands and not stale else ""
+        rows.append(_row(index, result, units, state, reason, uses.get(mark)))
+    return rows
 
 
 def grouped(
@@ -100,28 +113,42 @@ def grouped(
     return [Group(storey, tuple(found)) for storey, found in by_storey.items() if found]
 
 
-def _row(index: int, result: LineResult, units: DisplayUnits, state: State) -> Row:
+def _row(
+    index: int,
+    result: LineResult,
+    units: DisplayUnits,
+    state: State,
+    reason: str,
+    use: float | None,
+) -> Row:
     line = result.line
     spans = len({m.span for m in line.members if m.role == "span"}) or len(line.members)
     values = governing(result)
     shown = tuple(
         "–" if value is None else units.number(value, quantity)
-        for value, quantity in zip(values, QUANTITY_OF[3:], strict=True)
+        for value, quantity in zip(values, QUANTITY_OF[3:7], strict=True)
     )
+    share = "–" if use is None else f"{100.0 * use:.0f} %"
     storey = line.storey or say(NO_STOREY)
     search = " ".join([line.mark, storey, state, say(state), *line.elements]).lower()
-    texts = (line.mark, f"{GLYPHS[state]} {state}", str(spans), *shown)
-    return Row(index, line.mark, storey, state, spans, values, texts, search)
+    texts = (line.mark, f"{GLYPHS[state]} {state}", str(spans), *shown, share)
+    return Row(index, line.mark, storey, state, spans, (*values, use), texts, search, reason)
 
 
-def _state(result: LineResult, undecided: bool, stale: bool, posted: Collection[str]) -> State:
-    if result.status != "balanced" and (undecided or result.status == "not analysed"):
+def _state(
+    result: LineResult, stale: bool, posted: Collection[str], in_file: PostedState | None
+) -> State:
+    if result.status == "not analysed":
         return "needs a decision"
     if result.solution is None:
         return "ready"
     if stale:
         return "stale"
-    return "posted" if result.fingerprint and result.fingerprint in posted else "balanced"
+    if result.fingerprint and result.fingerprint in posted:
+        return "posted"
+    if in_file is None or in_file.state == "not posted":
+        return "balanced"
+    return "posted" if in_file.state == "current" else "stale"
 
 
 def governing(

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from analysis_core.ifc.support_reactions import support_reactions
+from analysis_core.ifc.support_reactions import SupportReactions, support_reactions
 from analysis_core.results import Outcome
 from analysis_core.tables import safe
 from analysis_core.units import DisplayUnits
@@ -36,18 +36,18 @@ class BearingRow:
 
 def paths_at_joint(outcome: Outcome, line: int, joint: int) -> list[Path]:
     """Return the lines that carry a joint of a line."""
-    mark = outcome.lines[line].line.mark
+    mark, numbers = outcome.lines[line].line.mark, _numbers(outcome)
     return [
         Path(say("↓ on {line}", line=safe(t.to_line)), number)
         for t in outcome.model.transfers
         if (t.from_line, t.joint) == (mark, joint)
-        and (number := _number(outcome, t.to_line)) is not None
+        and (number := numbers.get(t.to_line)) is not None
     ]
 
 
 def paths_on_member(outcome: Outcome, line: int, member: int, units: DisplayUnits) -> list[Path]:
     """Return the lines that bear on a member, in the order in which they do."""
-    mark = outcome.lines[line].line.mark
+    mark, numbers = outcome.lines[line].line.mark, _numbers(outcome)
     found = sorted(
         (t.position, t.from_line)
         for t in outcome.model.transfers
@@ -59,27 +59,31 @@ def paths_on_member(outcome: Outcome, line: int, member: int, units: DisplayUnit
             number,
         )
         for position, name in found
-        if (number := _number(outcome, name)) is not None
+        if (number := numbers.get(name)) is not None
     ]
 
 
 def bearing_rows(outcome: Outcome, units: DisplayUnits) -> list[BearingRow]:
     """Return what every supporting element receives, the most loaded first."""
-    names = outcome.model.names
+    names, numbers = outcome.model.names, _numbers(outcome)
     rows = [
-        _row(element, found, outcome, names, units)
+        _row(element, found, numbers, names, units)
         for element, found in support_reactions(outcome).items()
     ]
     return sorted(rows, key=lambda row: -row.values[0])
 
 
 def _row(
-    element: str, found: object, outcome: Outcome, names: Mapping[str, str], units: DisplayUnits
+    element: str,
+    found: SupportReactions,
+    numbers: Mapping[str, int],
+    names: Mapping[str, str],
+    units: DisplayUnits,
 ) -> BearingRow:
-    low, high = found.total("Vertical") or (0.0, 0.0)  # type: ignore[attr-defined]
-    cases = found.cases  # type: ignore[attr-defined]
+    low, high = found.total("Vertical") or (0.0, 0.0)
+    cases = found.cases
     marks = tuple(dict.fromkeys(mark for mark, _ in cases))
-    lines = tuple(n for mark in marks if (n := _number(outcome, mark)) is not None)
+    lines = tuple(numbers[mark] for mark in marks if mark in numbers)
     name = safe(names.get(element, "")) or safe(element)
     detail = "\n".join(
         f"{safe(mark)} / {safe(case)}: {units.text(value, 'force')}"
@@ -90,5 +94,5 @@ def _row(
     return BearingRow(texts, (high, low), lines, element, f"{safe(element)}\n{detail}", search)
 
 
-def _number(outcome: Outcome, mark: str) -> int | None:
-    return next((i for i, r in enumerate(outcome.lines) if r.line.mark == mark), None)
+def _numbers(outcome: Outcome) -> dict[str, int]:
+    return {result.line.mark: i for i, result in enumerate(outcome.lines)}

@@ -10,11 +10,12 @@ from analysis_core.results import LineResult, Outcome
 from .listing import STATES, Row, governing
 from .words import noop
 
-PLAIN, BY_STATE, BY_CHANGE = "plain", "state", "change"
-WAYS = (PLAIN, BY_STATE, BY_CHANGE)
+PLAIN, BY_STATE, BY_CHANGE, BY_USE = "plain", "state", "change", "use"
+WAYS = (PLAIN, BY_STATE, BY_CHANGE, BY_USE)
 # Bits of a stroke, long to short; solid where every line is alike in this respect.
 SOLID, LONG, SHORT, DOTS = 0xFFFF, 0xFFF0, 0xF0F0, 0xCCCC
 CHANGES = (0.001, 0.05, 0.20)
+USES = (0.5, 0.8, 1.0)
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,13 +41,20 @@ _BY_CHANGE = (
     Shade(noop("up to 20 %"), "attention", SHORT, 3.5),
     Shade(noop("more than 20 %, or new"), "bad", DOTS, 4.0),
 )
+_BY_USE = (
+    Shade(noop("up to half used"), "good"),
+    Shade(noop("up to 80 % used"), "deflection", LONG, 3.0),
+    Shade(noop("up to all used"), "attention", SHORT, 3.5),
+    Shade(noop("more than all"), "bad", DOTS, 4.5),
+    Shade(noop("not checked"), "faint", LONG, 2.0),
+)
 
 
 def shades(way: str) -> tuple[Shade, ...]:
     """Return the classes of a way to tell lines apart, for the legend."""
     if way == BY_STATE:
         return tuple(_BY_STATE[state] for state in STATES)
-    return _BY_CHANGE if way == BY_CHANGE else (Shade("", "line"),)
+    return {BY_CHANGE: _BY_CHANGE, BY_USE: _BY_USE}.get(way, (Shade("", "line"),))
 
 
 def shade_numbers(
@@ -55,6 +63,8 @@ def shade_numbers(
     """Return the class of every line, as a number into ``shades(way)``."""
     if way == BY_STATE:
         return [STATES.index(row.state) for row in rows]
+    if way == BY_USE:
+        return [_use_class(row.values[-1]) for row in rows]
     if way != BY_CHANGE or before is None:
         return [0] * len(rows)
     old = {result.line.mark: result for result in before.lines}
@@ -73,6 +83,10 @@ def largest_change(before: LineResult | None, after: LineResult) -> float:
             # By size: a shear that governs at the other end of the line has the other sign.
             changes.append(abs(abs(a) - abs(b)) / max(abs(a), abs(b)))
     return max(changes)
+
+
+def _use_class(use: float | None) -> int:
+    return len(USES) + 1 if use is None else sum(use > limit for limit in USES)
 
 
 def _change_class(before: LineResult | None, after: LineResult) -> int:

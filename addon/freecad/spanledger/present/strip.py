@@ -12,6 +12,7 @@ from dataclasses import dataclass, field, replace
 import numpy as np
 from numpy.typing import NDArray
 
+from analysis_core.line_details import detail_of
 from analysis_core.model import (
     Action,
     DistributedForce,
@@ -85,6 +86,7 @@ class Curve:
     upper: Floats
     peaks: tuple[Peak, ...]
     before: tuple[Floats, Floats] | None = None
+    redistributed: tuple[Floats, Floats] | None = None
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -123,6 +125,10 @@ def strip_of(
         for quantity in QUANTITIES:
             curve = _curve(envelope, stretches, quantity, units)
             curves[quantity] = _with_before(curve, old, before.line if before else None)
+        if (after := _redistributed(result, view)) is not None:
+            for quantity in ("moment", "shear"):
+                pair = _joined(after, stretches, quantity)
+                curves[quantity] = replace(curves[quantity], redistributed=pair)
     factors = None if view.kind == "envelope" else dict(view.factors)
     return Strip(
         line=line,
@@ -357,6 +363,14 @@ def _worth_labels(peaks: list[Peak]) -> list[Peak]:
             continue
         kept.append(peak)
     return sorted(kept, key=lambda p: p.x)
+
+
+def _redistributed(result: LineResult, view: View) -> LineEnvelope | None:
+    """Return the strength envelope after redistribution, where the engineer asked for it."""
+    if (view.kind, view.name) != ("envelope", "strength") or result.detail is None:
+        return None
+    found = detail_of(result).redistributed
+    return found.envelope if found is not None else None
 
 
 def _with_before(curve: Curve, before: LineEnvelope | None, line: Line | None) -> Curve:

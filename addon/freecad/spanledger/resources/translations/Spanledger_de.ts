@@ -92,6 +92,14 @@
       <translation>Änderungen</translation>
     </message>
     <message>
+      <source>Checked by</source>
+      <translation>Nachweis nach</translation>
+    </message>
+    <message>
+      <source>Checking</source>
+      <translation>Nachweisen</translation>
+    </message>
+    <message>
       <source>Choose a line in the list or in the 3D view.</source>
       <translation>Einen Trägerzug in der Liste oder in der 3D-Ansicht wählen.</translation>
     </message>
@@ -126,6 +134,10 @@
     <message>
       <source>Deflection</source>
       <translation>Durchbiegung</translation>
+    </message>
+    <message>
+      <source>Deflection limit</source>
+      <translation>Durchbiegungsgrenze</translation>
     </message>
     <message>
       <source>Distribution</source>
@@ -344,6 +356,14 @@
       <translation>Moment</translation>
     </message>
     <message>
+      <source>Moment redistribution</source>
+      <translation>Momentenumlagerung</translation>
+    </message>
+    <message>
+      <source>Moments of {mark} redistributed</source>
+      <translation>Momente von {mark} umgelagert</translation>
+    </message>
+    <message>
       <source>Nature</source>
       <translation>Art</translation>
     </message>
@@ -386,6 +406,14 @@
     <message>
       <source>Open IFC model</source>
       <translation>IFC-Modell öffnen</translation>
+    </message>
+    <message>
+      <source>Part</source>
+      <translation>Anteil</translation>
+    </message>
+    <message>
+      <source>Part of the support moments, 0 % for none</source>
+      <translation>Anteil der Stützmomente, 0 % für keine</translation>
     </message>
     <message>
       <source>Place</source>
@@ -442,6 +470,14 @@
     <message>
       <source>Reasons</source>
       <translation>Gründe</translation>
+    </message>
+    <message>
+      <source>Redistribute</source>
+      <translation>Umlagern</translation>
+    </message>
+    <message>
+      <source>Restrained</source>
+      <translation>Gehalten durch</translation>
     </message>
     <message>
       <source>Rotation</source>
@@ -616,6 +652,10 @@
       <translation>Zurückgenommen</translation>
     </message>
     <message>
+      <source>Use</source>
+      <translation>Ausnutzung</translation>
+    </message>
+    <message>
       <source>Use a job file</source>
       <translation>Eine Auftragsdatei verwenden</translation>
     </message>
@@ -672,6 +712,10 @@
       <translation>nach Zustand</translation>
     </message>
     <message>
+      <source>by use</source>
+      <translation>nach Ausnutzung</translation>
+    </message>
+    <message>
       <source>carried over</source>
       <translation>übertragen</translation>
     </message>
@@ -690,6 +734,14 @@
     <message>
       <source>curvature {value} mrad/m</source>
       <translation>Krümmung {value} mrad/m</translation>
+    </message>
+    <message>
+      <source>dashed: before</source>
+      <translation>gestrichelt: vorher</translation>
+    </message>
+    <message>
+      <source>dashed: redistributed</source>
+      <translation>gestrichelt: umgelagert</translation>
     </message>
     <message>
       <source>deflection</source>
@@ -796,6 +848,10 @@
       <translation>mehr als 20 % oder neu</translation>
     </message>
     <message>
+      <source>more than all</source>
+      <translation>übernutzt</translation>
+    </message>
+    <message>
       <source>moves down {by}</source>
       <translation>senkt sich um {by}</translation>
     </message>
@@ -830,6 +886,14 @@
     <message>
       <source>not analysed</source>
       <translation>nicht berechnet</translation>
+    </message>
+    <message>
+      <source>not checked</source>
+      <translation>nicht nachgewiesen</translation>
+    </message>
+    <message>
+      <source>not checked: {reason}</source>
+      <translation>nicht nachgewiesen: {reason}</translation>
     </message>
     <message>
       <source>note</source>
@@ -938,6 +1002,18 @@
     <message>
       <source>up to 5 %</source>
       <translation>bis 5 %</translation>
+    </message>
+    <message>
+      <source>up to 80 % used</source>
+      <translation>bis 80 % genutzt</translation>
+    </message>
+    <message>
+      <source>up to all used</source>
+      <translation>bis ganz genutzt</translation>
+    </message>
+    <message>
+      <source>up to half used</source>
+      <translation>bis zur Hälfte genutzt</translation>
     </message>
     <message>
       <source>warning</source>
