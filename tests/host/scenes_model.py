@@ -462,3 +462,52 @@ def every_model():
         picture_of_screen(f"model_{copy.stem}")
         found[copy.name] = count
     return found
+
+
+def use():
+    """Tell lines apart by use of capacity, redistribute moments, and reopen what was posted."""
+    desk = activate()
+    path = copied()
+    opened(desk, path)
+    found = {}
+    tree = desk.panels.list.model
+    wait_until(lambda: tree.index_of(0).isValid() and bool(desk.session.checks), what="the checks")
+    settle(0.2)
+    found["use"] = tree.data(tree.index_of(0).siblingAtColumn(7))
+    box = widget(QtWidgets.QComboBox, "SpanledgerShadedBy")
+    box.setCurrentIndex(box.findData("use"))
+    canvas = widget(QtWidgets.QWidget, "SpanledgerCanvas")
+    spot = next(s for s in canvas.drawing.spots if (s.kind, s.number) == ("member", 1))
+    desk.choose_spot(spot)
+    picture_of_screen("use")
+    found["facts"] = " ".join(
+        label.text() for label in desk.panels.strip.findChildren(QtWidgets.QLabel)
+        if label.objectName() == "SpanledgerFacts"
+    )  # fmt: skip
+    desk.choose_spot(None)
+    widget(QtWidgets.QLineEdit, "SpanledgerRedistribution").setText("15 %")
+    click(widget(QtWidgets.QPushButton, "SpanledgerDecideRedistribution"))
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    settle(0.3)
+    strip = canvas.strip
+    found["redistributed"] = strip.curves["moment"].redistributed is not None
+    picture_of_screen("redistributed")
+
+    target = path.with_name("posted.ifc")
+    desk.post(target)
+    wait_until(lambda: not desk.runs.busy, what="posting")
+    shutil.copy(path.with_suffix(".yaml"), target.with_suffix(".yaml"))
+    opened(desk, target)
+    found["reopened"] = sorted({row.state for row in tree._rows})
+    line = desk.solved.outcome.lines[0].line
+    from freecad.spanledger.present import decisions
+
+    where = decisions.where_is(line, 0)
+    desk.decide("fixed", lambda text: decisions.decide_support(text, where, "fixed"))
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    settle(0.3)
+    rows = {row.mark: row for row in tree._rows}
+    found["after"] = rows["FF-01"].state
+    found["reason"] = rows["FF-01"].reason
+    found["others"] = sorted({row.state for mark, row in rows.items() if mark != "FF-01"})
+    return found

@@ -158,3 +158,15 @@ def test_every_sample_model_can_be_looked_at(in_freecad):
     assert set(found) == {path.name for path in samples}
     assert all(count == 11 for count in found.values())
     assert "Traceback" not in log
+
+
+def test_use_redistribution_and_what_was_posted_are_shown(in_freecad):
+    found = in_freecad("scenes_model:use")
+
+    assert found["use"].endswith("%")
+    assert "1992" in found["facts"]  # the code that checked a concrete span
+    assert found["redistributed"]
+    assert found["reopened"] == ["posted"]
+    assert found["after"] == "stale"
+    assert found["reason"]
+    assert found["others"] == ["posted"]
