@@ -17,6 +17,7 @@ from analysis_core.results import Extreme, Floats, LineResult, MemberEnvelope, O
 
 STRENGTH = "strength"
 SERVICEABILITY = "serviceability"
+_NOWHERE: Floats = np.zeros(0)
 
 
 class Part(NamedTuple):
@@ -143,7 +144,7 @@ def _alone(element: str, part: Part) -> ElementEffects | None:
     if member.reversed_ or member.element_offset:
         return None
     u, s = strength.members[member.id], service.members[member.id]
-    if u.member != member.id or s.member != member.id:
+    if u.member != member.id or s.member != member.id or not u.x.size or not s.x.size:
         return None
     return ElementEffects(
         element,
@@ -248,8 +249,8 @@ def _curves(found: list[_Found]) -> list[Curve]:
     curves: list[Curve] = []
     for state, readings in _ALONG.items():
         parts = [each for each in found if each.state == state and each.part.result is main]
-        if parts:
-            positions = _chained([_places(each) for each in parts])
+        positions = _chained([_places(each) for each in parts]) if parts else _NOWHERE
+        if positions.size:
             curves += [
                 Curve(
                     name, positions, _chained([_along(each, read(each.envelope)) for each in parts])

@@ -115,6 +115,15 @@ def test_diagrams_are_tables_over_positions_from_the_start_of_the_element(tmp_pa
     assert {v.is_a() for v in found["DeflectionMax"].DefinedValues} == {"IfcLengthMeasure"}
 
 
+def test_without_stations_there_are_effects_and_no_diagrams(tmp_path):
+    model, report = posted(tmp_path, outcome_of(span_result(BEAM, stations=0)))
+
+    assert set(element_tools.get_psets(model.by_guid(BEAM))) == {
+        "Spanledger_Effects", "Spanledger_Record"
+    }  # fmt: skip
+    assert report.findings == ()
+
+
 @pytest.mark.parametrize("schema", SCHEMAS)
 def test_the_record_says_how_when_and_with_what_care(tmp_path, schema):
     model, _ = posted(tmp_path, outcome_of(span_result(BEAM, fingerprint="abc123")), schema)
