@@ -166,6 +166,20 @@ class SectionSetting:
 
 
 @dataclass(frozen=True, slots=True)
+class TableSection:
+    """A section by its dimensions, for members that are given another; m.
+
+    ``shape``: "I", "rectangle", "hollow rectangle", "tube", "circle", "channel", "tee", "angle".
+    ``dimensions``: "depth", "width", "web_thickness", "flange_thickness", "wall_thickness",
+    "thickness" (of an angle), "diameter", "fillet_radius", "outer_radius", "inner_radius".
+    """
+
+    name: str
+    shape: str
+    dimensions: Mapping[str, float]
+
+
+@dataclass(frozen=True, slots=True)
 class Tolerances:
     """Distances in m and angles in rad used when members become lines."""
 
@@ -329,6 +343,9 @@ class Settings:
     releases: tuple[ReleaseSetting, ...] = ()
     materials: tuple[MaterialSetting, ...] = ()
     sections: tuple[SectionSetting, ...] = ()
+    section_table: tuple[TableSection, ...] = ()
+    section_table_file: str = ""
+    """Where the section table stands, as the job file names it; empty where it is written out."""
     limits: tuple[Limits, ...] = ()
     checks: CheckSettings = field(default_factory=CheckSettings)
     text: str = ""

@@ -155,8 +155,11 @@ class BodyReader:
 
     def _mapping_frame(self, item: Any) -> Frame:
         target = self._operator(item[1])
+        # Applications, the geometry library among them, place the map by its origin; taken by
+        # the letter (ISO 10303-43) the origin would be undone first.  It hardly ever differs
+        # from the identity.
         origin = self._placements.axes(item[0][0])
-        return target if origin == WORLD else frames.compose(target, frames.inverse(origin))
+        return target if origin == WORLD else frames.compose(target, origin)
 
     def _operator(self, operator: Any) -> Frame:
         """Return the frame of an IfcCartesianTransformationOperator3D (IfcBaseAxis)."""
@@ -213,15 +216,21 @@ class BodyReader:
         kept = tuple(self._item(first, depth + 1))
         if operator == "UNION":
             return kept + tuple(self._item(second, depth + 1))
-        if operator == "DIFFERENCE" and second.is_a("IfcHalfSpaceSolid"):
+        if operator != "DIFFERENCE":
+            return kept
+        cuts: tuple[Cut, ...] = ()
+        holes: tuple[Prism, ...] = ()
+        if second.is_a("IfcHalfSpaceSolid"):
             cut = self._half_space(second)
-            if cut is not None:
-                return tuple(
-                    part._replace(cuts=(*part.cuts, cut)) if isinstance(part, Prism) else part
-                    for part in kept
-                )
+            cuts = (cut,) if cut is not None else ()
+        else:
+            taken = self._item(second, depth + 1)
+            holes = tuple(part for part in taken if isinstance(part, Prism))
         return tuple(
-            part._replace(trimmed=True) if isinstance(part, Prism) else part for part in kept
+            part._replace(cuts=part.cuts + cuts, holes=part.holes + holes)
+            if isinstance(part, Prism)
+            else part
+            for part in kept
         )
 
     def _half_space(self, half: Any) -> Cut | None:

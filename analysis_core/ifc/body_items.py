@@ -60,8 +60,8 @@ class Prism(NamedTuple):
     end_profile: Profile | None = None
     end_entity: Any = None
     cuts: tuple[Cut, ...] = ()
-    trimmed: bool = False
-    """Whether something other than a half-space was taken from it."""
+    holes: tuple[Prism, ...] = ()
+    """Prisms taken away from it: notches, fittings, holes."""
     remark: str = ""
     """What had to be assumed to see a prism in the body."""
 
@@ -71,6 +71,7 @@ class Prism(NamedTuple):
             frame=frames.compose(frame, self.frame),
             vector=frames.direction(frame, *self.vector),
             cuts=tuple(cut.moved(frame) for cut in self.cuts),
+            holes=tuple(hole.moved(frame) for hole in self.holes),
         )
 
 

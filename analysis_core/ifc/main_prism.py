@@ -3,18 +3,20 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 import numpy as np
 
-from analysis_core.ifc import frames
+from analysis_core.ifc import frames, outline
 from analysis_core.ifc.body_items import Curved, Cut, Item, Mesh, Prism, together
+from analysis_core.ifc.built_up import joined_section, runs_beside
 from analysis_core.ifc.frames import Vector
 from analysis_core.ifc.mesh_cuts import inside
 from analysis_core.ifc.mesh_prisms import mesh_of_prism, prism_of_mesh
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
 PARALLEL = math.cos(math.radians(2.0))
+_STEPS = 100
 
 
 class CurvedMemberError(UnreadableShapeError):
@@ -44,19 +46,27 @@ def main_prism(
         if curved:
             raise CurvedMemberError(_bend(curved[0]))
         raise UnreadableShapeError("its body has no solid part")
-    volumes = [prism.profile.moments.area * _height(prism) for prism in prisms]
-    main = prisms[int(np.argmax(volumes))]
+    return _largest(prisms)
+
+
+def _largest(prisms: list[Prism]) -> tuple[Prism, list[str]]:
+    """The largest part, with those that run beside it in its section and those that go on."""
+    volumes = {id(p): p.profile.moments.area * _height(p) for p in prisms}
+    main = max(prisms, key=lambda p: volumes[id(p)])
+    others = [(p, runs_beside(main, p)) for p in prisms if p is not main]
+    beside = [p for p, runs in others if runs]
+    rest = [p for p, runs in others if not runs]
+    used = volumes[id(main)] + sum(volumes[id(p)] for p in beside)
     remarks = [main.remark] if main.remark else []
-    others = [
-        v for prism, v in zip(prisms, volumes, strict=True)
-        if prism is not main and v > 0.05 * max(volumes)
-    ]  # fmt: skip
-    if others:
+    if beside:
+        main = joined_section(main, beside)
+        remarks.append(f"its section is made of {1 + len(beside)} parts that run side by side")
+    if sum(volumes[id(p)] for p in rest) > 0.05 * used:
         remarks.append(
             f"its body has {len(prisms)} parts; the section is that of the largest, "
-            f"{100.0 * max(volumes) / sum(volumes):.0f} % of the volume"
+            f"{100.0 * used / sum(volumes.values()):.0f} % of the volume"
         )
-        main = _with_collinear(main, prisms)
+        main = _with_collinear(main, rest)
     return main, remarks
 
 
@@ -90,7 +100,7 @@ def _with_collinear(main: Prism, prisms: Sequence[Prism]) -> Prism:
     low, high = 0.0, frames.length(main.vector)
     reach = 0.5 * math.sqrt(main.profile.moments.area)
     for other in prisms:
-        if other is main or abs(frames.dot(frames.unit(other.vector), along)) < PARALLEL:
+        if abs(frames.dot(frames.unit(other.vector), along)) < PARALLEL:
             continue
         stations = []
         for p in _centroid_line(other):
@@ -134,15 +144,49 @@ def _centroid_line(prism: Prism) -> tuple[Vector, Vector]:
 
 
 def body_ends(prism: Prism) -> tuple[Vector, Vector]:
-    """Ends of the centroid line, shortened by the half-spaces taken from the body."""
+    """Return the ends of the centroid line, shortened by what was taken from the body there."""
     start, end = _centroid_line(prism)
     low, high = 0.0, 1.0
     along = frames.minus(end, start)
     for cut in prism.cuts:
         low, high = after_cut(cut, start, along, low, high)
+    for hole in prism.holes:
+        low, high = _after_hole(hole, start, along, low, high)
     if high - low < 0.02:
         return start, end
     return frames.plus(start, along, low), frames.plus(start, along, high)
+
+
+def _after_hole(
+    hole: Prism, start: Vector, along: Vector, low: float, high: float
+) -> tuple[float, float]:
+    """Part of a line that a prism taken away leaves; only what it takes at an end counts."""
+    frame = (*hole.frame[:6], *hole.vector, *hole.frame[9:])
+    back = frames.inverse(frame)
+    rings = [outline.flattened(rows, chords=32)[:, :2] for rows in hole.profile.drawn.loops]
+
+    def taken(share: float) -> bool:
+        x, y, z = frames.point(back, *frames.plus(start, along, share))
+        return 0.0 <= z <= 1.0 and sum(inside(ring, x, y) for ring in rings) % 2 == 1
+
+    step = (high - low) / _STEPS
+    # Half a step inside: a hole that ends flush with the body must not miss the very end.
+    if taken(low + 0.5 * step):
+        free = next((i for i in range(1, _STEPS) if not taken(low + (i + 0.5) * step)), None)
+        if free is not None:
+            low = _border(taken, low + (free - 0.5) * step, low + (free + 0.5) * step)
+    if taken(high - 0.5 * step):
+        free = next((i for i in range(1, _STEPS) if not taken(high - (i + 0.5) * step)), None)
+        if free is not None:
+            high = _border(taken, high - (free - 0.5) * step, high - (free + 0.5) * step)
+    return low, high
+
+
+def _border(taken: Callable[[float], bool], within: float, outside: float) -> float:
+    for _ in range(30):
+        middle = 0.5 * (within + outside)
+        within, outside = (middle, outside) if taken(middle) else (within, middle)
+    return outside
 
 
 def after_cut(

@@ -181,15 +181,23 @@ def _nested(loops: list[Floats]) -> Loops:
     solid: list[Floats] = []
     voids: list[Floats] = []
     for rows in sorted(loops, key=lambda r: -abs(outline.signed_area(r))):
-        depth = sum(
-            inside(other[:, :2], float(rows[0, 0]), float(rows[0, 1]))
-            for other in loops
-            if other is not rows
-        )
+        x, y = _point_within(rows)
+        depth = sum(inside(other[:, :2], x, y) for other in loops if other is not rows)
         (voids if depth % 2 else solid).append(rows)
     return tuple(outline.anticlockwise(r) for r in solid) + tuple(
         outline.clockwise(r) for r in voids
     )
+
+
+def _point_within(rows: Floats) -> tuple[float, float]:
+    """A point just inside a loop, beside the middle of its longest edge (corners may touch)."""
+    x, y = rows[:, 0], rows[:, 1]
+    dx, dy = outline.following(x) - x, outline.following(y) - y
+    lengths = np.hypot(dx, dy)
+    i = int(lengths.argmax())
+    turn = 1.0 if outline.signed_area(rows) > 0.0 else -1.0
+    step = 1e-4 * turn
+    return float(x[i] + 0.5 * dx[i] - step * dy[i]), float(y[i] + 0.5 * dy[i] + step * dx[i])
 
 
 def inside(ring: Floats, x: float, y: float) -> bool:

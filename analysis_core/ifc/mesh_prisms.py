@@ -8,6 +8,7 @@ the cut through the faces half-way, so an I-beam written as triangles keeps its 
 from __future__ import annotations
 
 import math
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -16,7 +17,7 @@ from analysis_core.ifc import frames, outline
 from analysis_core.ifc.body_items import Curved, Mesh, Prism
 from analysis_core.ifc.drawn import Drawn
 from analysis_core.ifc.mesh_cuts import HALF_WAY, Faces, closed_cut, inside, merged, section_at
-from analysis_core.ifc.outline import Floats
+from analysis_core.ifc.outline import Floats, Loops, Moments
 from analysis_core.ifc.recognise import recognise
 from analysis_core.ifc.sections import Profile, profile_of
 from analysis_core.ifc.unreadable import UnreadableShapeError
@@ -24,6 +25,8 @@ from analysis_core.ifc.unreadable import UnreadableShapeError
 _CURVED = 1.0 / 150.0
 
 _TAPERED = 0.05
+_PLACES = (0.1, 0.3, HALF_WAY, 0.7, 0.9)
+_MOST_EDGES = 1500
 
 
 def prism_of_mesh(mesh: Mesh) -> Prism | Curved:
@@ -45,14 +48,14 @@ def prism_of_mesh(mesh: Mesh) -> Prism | Curved:
     loops, remark = section_at(turned, faces, middle)
     drawn = recognise(loops)
     profile = profile_of("", mesh.ifc_class, drawn)
-    line = _line_of_centroids(turned, faces, low, high)
-    if line is not None and _bends(line):
-        back = line @ axes + base
+    cuts = _cuts(turned, faces, low, high)
+    if cuts and _bends(_line_of_centroids(cuts)):
+        back = _line_of_centroids(cuts) @ axes + base
         return Curved(back, mesh.ifc_class, profile)
     y, z = profile.moments.x, profile.moments.y
     start, end = _ends(turned, faces, y, z, low, high)
     prism = _prism(profile, axes, base, start, end, remark)
-    return _tapered(prism, mesh.ifc_class, turned, faces, low, high)
+    return _tapered(prism, cuts, mesh.ifc_class)
 
 
 def mesh_of_prism(prism: Prism) -> Mesh:
@@ -95,9 +98,11 @@ def _direction(local: Floats, faces: Faces, size: float) -> Floats:
         return principal
     vectors = local[pairs[:, 1]] - local[pairs[:, 0]]
     lengths = np.linalg.norm(vectors, axis=1)
-    long = lengths > 0.25 * size
-    if not long.any():
+    long = np.flatnonzero(lengths > 0.25 * size)
+    if long.size == 0:
         return principal
+    if long.size > _MOST_EDGES:
+        long = long[np.argsort(-lengths[long])[:_MOST_EDGES]]
     units = vectors[long] / lengths[long][:, None]
     weights = lengths[long]
     parallel = np.abs(units @ units.T) > math.cos(math.radians(0.05))
@@ -130,19 +135,26 @@ def _axes(axis: Floats, local: Floats) -> Floats:
     return np.array([a, across, frames.cross(a, across)])
 
 
-def _line_of_centroids(turned: Floats, faces: Faces, low: float, high: float) -> Floats | None:
-    """Centroids of the cuts at five places, or None where a cut does not close."""
-    if not faces:
-        return None
-    rows = []
-    for share in (0.1, 0.3, HALF_WAY, 0.7, 0.9):
+class _Cut(NamedTuple):
+    at: float
+    loops: Loops
+    moments: Moments
+
+
+def _cuts(turned: Floats, faces: Faces, low: float, high: float) -> list[_Cut]:
+    """Cuts at five places along the body; empty where one does not close."""
+    cuts = []
+    for share in _PLACES if faces else ():
         at = low + share * (high - low)
         loops = closed_cut(turned, faces, at)
         if not loops:
-            return None
-        moments = outline.moments(loops)
-        rows.append((at, moments.x, moments.y))
-    return np.array(rows)
+            return []
+        cuts.append(_Cut(at, loops, outline.moments(loops)))
+    return cuts
+
+
+def _line_of_centroids(cuts: list[_Cut]) -> Floats:
+    return np.array([(cut.at, cut.moments.x, cut.moments.y) for cut in cuts])
 
 
 def _bends(line: Floats) -> bool:
@@ -196,25 +208,46 @@ def _prism(
     return Prism(profile, frame, vector, remark=remark)
 
 
-def _tapered(
-    prism: Prism, ifc_class: str, turned: Floats, faces: Faces, low: float, high: float
-) -> Prism:
-    """Give the prism an end profile where the section grows or shrinks steadily."""
-    if prism.remark:
+def _tapered(prism: Prism, cuts: list[_Cut], ifc_class: str) -> Prism:
+    """Give the prism an end profile where the section grows or shrinks steadily.
+
+    The cuts lie a tenth of the length from either end, where bevels and notches do not disturb
+    them; corner by corner they are carried on to the ends.
+    """
+    if prism.remark or not cuts:
         return prism
-    sections = []
-    for share in (0.02, 0.98):
-        loops = closed_cut(turned, faces, low + share * (high - low))
-        if not loops:
-            return prism
-        sections.append(recognise(loops))
-    start, end = (profile_of("", ifc_class, drawn) for drawn in sections)
-    middle = prism.profile.moments.area
-    change = (end.moments.area - start.moments.area) / middle
-    steady = abs(0.5 * (start.moments.area + end.moments.area) - middle) < 0.1 * middle
-    if abs(change) < _TAPERED or not steady or not _same_kind(start.drawn, end.drawn):
+    areas = np.array([cut.moments.area for cut in cuts])
+    places = np.array([cut.at for cut in cuts])
+    middle = float(areas[len(areas) // 2])
+    if float(np.ptp(areas)) < _TAPERED * middle:
         return prism
+    slope, base = np.polyfit(places, areas, 1)
+    steady = float(np.abs(areas - base - slope * places).max()) < 0.4 * _TAPERED * middle
+    loops = _carried_on(cuts[0].loops, cuts[-1].loops) if steady else None
+    if loops is None:
+        return prism._replace(remark="its section varies along it; that half-way was taken")
+    start, end = (profile_of("", ifc_class, recognise(part)) for part in loops)
+    if not _same_kind(start.drawn, end.drawn):
+        return prism._replace(remark="its section varies along it; that half-way was taken")
     return prism._replace(profile=start, end_profile=end)
+
+
+def _carried_on(first: Loops, last: Loops) -> tuple[Loops, Loops] | None:
+    """Loops at both ends from those at the first and last place; None if corners do not match."""
+    starts, ends = [], []
+    if len(first) != len(last):
+        return None
+    reach = _PLACES[0] / (_PLACES[-1] - _PLACES[0])
+    for a, b in zip(first, last, strict=True):
+        if len(a) != len(b):
+            return None
+        turns = [np.roll(b, -i, axis=0) for i in range(len(b))]
+        shifts = [a[:, :2] - t[:, :2] for t in turns]
+        spreads = [float(np.square(shift - shift.mean(axis=0)).sum()) for shift in shifts]
+        b = turns[int(np.argmin(spreads))]
+        starts.append(a + reach * (a - b))
+        ends.append(b + reach * (b - a))
+    return tuple(starts), tuple(ends)
 
 
 def _same_kind(a: Drawn, b: Drawn) -> bool:

@@ -70,6 +70,16 @@ class Notes:
             )
         )
 
+    def lying_column(self, record: Record) -> None:
+        """Note a column that lies like a beam."""
+        self.group(
+            "note",
+            "lying-column",
+            "called columns, which lie flat and are taken as beams",
+            "Give them the class IfcBeam.",
+            record,
+        )
+
     def left_out(self, reason: str, record: Record) -> None:
         """Note an element that is no beam."""
         self.group(

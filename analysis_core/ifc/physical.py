@@ -4,22 +4,18 @@ from __future__ import annotations
 
 import gc
 import math
-from collections.abc import Iterable, Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
-from dataclasses import replace
-from typing import Any
 
 import numpy as np
 
-from analysis_core.building import Area, AxisMember, Building, Carrier
-from analysis_core.ifc.areas import AreaReader
-from analysis_core.ifc.body_items import Shape
+from analysis_core.building import AxisMember, Building
+from analysis_core.ifc.carriers import CarrierReader, check_place
 from analysis_core.ifc.elements import Elements
 from analysis_core.ifc.end_releases import NOT_STATED, end_releases
-from analysis_core.ifc.extents import Extent, ExtentReader
-from analysis_core.ifc.frames import Frame, point
+from analysis_core.ifc.frames import point
+from analysis_core.ifc.laid import Laid, LaidReader, Placed
 from analysis_core.ifc.main_prism import CurvedMemberError
-from analysis_core.ifc.material_choice import Choice
 from analysis_core.ifc.member_notes import (
     note_duplicates,
     note_openings,
@@ -29,24 +25,16 @@ from analysis_core.ifc.member_notes import (
     note_unreadable_relations,
 )
 from analysis_core.ifc.notes import Notes
-from analysis_core.ifc.outline import Matrix
 from analysis_core.ifc.records import Record
 from analysis_core.ifc.roles import RoleJudge, carrier_label, excluded_by_proportion
 from analysis_core.ifc.source import Source
-from analysis_core.ifc.sticks import Layer, Lying, Stick, stick_of, with_profile
 from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError, reason_of
-from analysis_core.model import Section
 from analysis_core.settings import Settings
 
 COLUMN_CLASSES = ("IfcColumn", "IfcPile")
-OTHER_CARRIER_CLASSES = (
-    "IfcWall",
-    "IfcFooting",
-    "IfcCaissonFoundation",
-    "IfcBearing",
-)
+OTHER_CARRIER_CLASSES = ("IfcWall", "IfcFooting", "IfcCaissonFoundation", "IfcBearing")
 
-_FARTHEST = 1e8
+_FLAT = math.sin(math.radians(30.0))  # a column that lies flatter is a beam
 # Classes asked for by default that some schemas do not have.
 _KNOWN_ELSEWHERE = {
     "IfcBeamStandardCase",
@@ -85,43 +73,46 @@ class _Reader:
         self._settings = settings
         self._notes = Notes()
         self._elements = Elements(source, settings, self._notes)
-        self._extents = ExtentReader()
-        self._members: list[AxisMember] = []
-        self._carriers: list[Carrier] = []
-        self._counts: dict[str, int] = {}
-        self._named_sections: dict[tuple[int, str], tuple[Section, Section]] = {}
-        self._steepest = math.sin(settings.tolerances.beam_slope)
-        self._ids: set[str] = set()
+        self._laying = LaidReader(self._elements)
+        self._bearing = CarrierReader(self._elements, self._laying, self._notes)
         self._roles = RoleJudge(settings.beams)
-        self._layer = Layer()
+        self._steepest = math.sin(settings.tolerances.beam_slope)
         self._ends = end_releases(source.file)
-        self._area_reader = AreaReader(self._elements, self._extents, self._notes)
-        self._areas: list[Area] = []
+        self._members: list[AxisMember] = []
+        self._counts: dict[str, int] = {}
+        self._ids: set[str] = set()
+        self._beam_ids: set[int] = set()
 
     def building(self) -> Building:
         storeys = self._elements.storeys()
+        included = self._settings.analysis.include
+        self._beam_ids = {
+            entity.id()
+            for ifc_class in included
+            for entity in self._elements.of_class(ifc_class) or ()
+        }
         done: set[int] = set()
-        for ifc_class in self._settings.analysis.include:
+        for ifc_class in included:
             self._read_all(ifc_class, self._read_beam, done)
         for ifc_class in COLUMN_CLASSES:
             self._read_all(ifc_class, self._read_column, done)
         for ifc_class in OTHER_CARRIER_CLASSES:
             self._read_all(ifc_class, self._read_carrier, done)
-        self._read_all("IfcSlab", self._read_slab, done)
+        self._read_all("IfcSlab", self._bearing.add_slab, done)
         if self._settings.area_actions:
-            self._read_all("IfcSpace", self._read_space, done)
+            self._read_all("IfcSpace", self._bearing.add_space, done)
+        note_duplicates(self._members, self._notes)
         self._count("taken as beams", len(self._members))
         self._elements.note_materials()
         self._note_relations()
-        note_duplicates(self._members, self._notes)
         return Building(
             route="physical",
             schema=self._source.schema,
             name=self._source.name,
             members=tuple(self._members),
-            carriers=tuple(self._carriers),
+            carriers=tuple(self._bearing.carriers),
             findings=(*self._notes.findings(), *self._source.units.findings()),
-            areas=tuple(self._areas),
+            areas=tuple(self._bearing.areas),
             storeys=storeys,
             counts=self._counts,
         )
@@ -129,7 +120,7 @@ class _Reader:
     def _count(self, what: str, number: int = 1) -> None:
         self._counts[what] = self._counts.get(what, 0) + number
 
-    def _read_all(self, ifc_class: str, reader: Any, done: set[int]) -> None:
+    def _read_all(self, ifc_class: str, reader: Callable[[Record], None], done: set[int]) -> None:
         found = self._elements.of_class(ifc_class)
         if found is None:
             if ifc_class not in _KNOWN_ELSEWHERE:
@@ -151,39 +142,51 @@ class _Reader:
                 self._notes.no_shape(record, reason_of(error))
 
     def _read_beam(self, record: Record) -> None:
-        elements = self._elements
-        role = self._roles.excluded(record, elements.relations.wholes(record.id))
+        role = self._roles.excluded(record, self._elements.relations.wholes(record.id))
+        role = role or self._part_or_whole(record)
         if role:
             self._leave_out(role, record)
             return
-        frame = elements.frame(record)
-        shape = elements.shape(record)
-        choice = elements.choice(record)
+        placed = self._laying.placed(record)
         try:
-            stick = self._stick(shape, choice)
+            laid = self._laying.laid(record, placed)
         except CurvedMemberError as error:
             self._count("curved")
             self._notes.curved(record, str(error))
             return
-        lying = self._layer.lay(stick, frame)
-        _check_place(lying.start + lying.end)
-        size, rise = stick.length, lying.end[2] - lying.start[2]
-        section, end_section = self._sections(record, stick, lying.matrix)
-        if section is None and choice.profile is not None:
-            # No outline, but perhaps values in the property sets of the associated profile.
-            section = elements.sections.section(choice.profile)
-        reason = excluded_by_proportion(size, section, self._settings.beams)
+        reason = excluded_by_proportion(laid.stick.length, laid.section, self._settings.beams)
         if reason:
             self._leave_out(reason, record)
             label = carrier_label(reason)
-            if label and shape.items:
-                self._add_carrier(record, shape, frame, choice, f"{record.ifc_class} ({label})")
-            return
-        if abs(rise) > self._steepest * size:
+            if label and placed.shape.items:
+                self._bearing.add(record, placed, f"{record.ifc_class} ({label})")
+        elif laid.rise > self._steepest:
             self._count("taken as columns")
-            self._add_column(record, shape, frame, stick, choice)
-            return
-        self._note_member(record, stick, choice, section)
+            self._bearing.add_column(record, placed, laid)
+        else:
+            self._add_member(record, placed, laid)
+
+    def _part_or_whole(self, record: Record) -> str:
+        """Say where a beam is part of a beam that is read, or is read by parts that are beams."""
+        relations = self._elements.relations
+        for host in relations.wholes(record.id):
+            if host.id() in self._beam_ids and host[6] is not None:
+                return "part of a beam that is read as a whole"
+        if record.shape is None:
+            parts = relations.parts_of.get(record.id, ())
+            if any(part.id() in self._beam_ids for part in parts):
+                return "drawn by its parts, which are read one by one"
+        return ""
+
+    def _leave_out(self, reason: str, record: Record) -> None:
+        self._count("left out")
+        self._notes.left_out(reason, record)
+
+    def _add_member(self, record: Record, placed: Placed, laid: Laid) -> None:
+        stick, lying, elements = laid.stick, laid.lying, self._elements
+        check_place(lying.start + lying.end)
+        self._note_member(record, placed, laid)
+        first, last = stick.body_start, stick.body_end
         self._members.append(
             AxisMember(
                 global_id=record.global_id,
@@ -192,155 +195,47 @@ class _Reader:
                 start=lying.start,
                 end=lying.end,
                 up=lying.up,
-                section=section,
-                end_section=end_section,
-                material=elements.material(record, choice),
+                section=laid.section,
+                end_section=laid.end_section,
+                material=elements.material(record, placed.choice),
                 storey=elements.storey(record),
                 type_name=elements.type_name(record),
                 axis_offset=stick.offset,
                 note="; ".join(stick.remarks),
                 end_stiffness=self._ends.get(record.id, NOT_STATED),
-                modelled_start=point(frame, *stick.body_start) if stick.body_start else None,
-                modelled_end=point(frame, *stick.body_end) if stick.body_end else None,
+                modelled_start=point(placed.frame, *first) if first else None,
+                modelled_end=point(placed.frame, *last) if last else None,
             )
         )
 
-    def _leave_out(self, reason: str, record: Record) -> None:
-        self._count("left out")
-        self._notes.left_out(reason, record)
-
-    def _stick(self, shape: Shape, choice: Choice) -> Stick:
-        stick = stick_of(shape)
-        if stick.profile is None and choice.profile is not None:
-            profile = self._elements.sections.profile(choice.profile)
-            if profile is not None:
-                return with_profile(stick, profile, choice.profile, choice.cardinal_point)
-        return stick
-
-    def _note_member(
-        self, record: Record, stick: Stick, choice: Choice, section: Section | None
-    ) -> None:
-        sections = self._elements.sections
+    def _note_member(self, record: Record, placed: Placed, laid: Laid) -> None:
+        stick, sections, stated = laid.stick, self._elements.sections, placed.choice.profile
         if sections.noticed:
             for profile in (stick.entity, stick.end_entity):
                 for finding in sections.findings(profile) if profile is not None else ():
                     self._notes.add(finding, record.global_id)
         note_stick(record, stick, self._notes)
-        stated = None
-        if choice.profile is not None and choice.profile != stick.entity:
-            stated = sections.profile(choice.profile)
-        note_section(record, section, stick.profile, stated, self._notes)
-
-    def _sections(
-        self, record: Record, stick: Stick, matrix: Matrix
-    ) -> tuple[Section | None, Section | None]:
-        if stick.profile is None:
-            return None, None
-        oriented = self._elements.sections.oriented
-        section = self._named(oriented(stick.profile, matrix, stick.entity), record)
-        if stick.end_profile is None:
-            return section, None
-        return section, self._named(oriented(stick.end_profile, matrix, stick.end_entity), record)
-
-    def _named(self, section: Section, record: Record) -> Section:
-        """Give a section without a name that of the element's type; one object per name."""
-        if section.name:
-            return section
-        name = self._elements.type_name(record)
-        if not name:
-            return section
-        key = (id(section), name)
-        if key not in self._named_sections:
-            self._named_sections[key] = (section, replace(section, name=name))
-        return self._named_sections[key][1]
+        other = None
+        if stated is not None and stated != stick.entity:
+            other = sections.profile(stated)
+        note_section(record, laid.section, stick.profile, other, self._notes)
 
     def _read_column(self, record: Record) -> None:
-        frame = self._elements.frame(record)
-        shape = self._elements.shape(record)
-        choice = self._elements.choice(record)
+        placed = self._laying.placed(record)
         try:
-            stick = self._stick(shape, choice)
+            laid = self._laying.laid(record, placed)
         except UnreadableShapeError:
-            self._add_carrier(record, shape, frame, choice, record.ifc_class)
+            self._bearing.add(record, placed, record.ifc_class)
             return
-        self._add_column(record, shape, frame, stick, choice)
+        rules = self._settings.beams
+        if laid.rise < _FLAT and not excluded_by_proportion(laid.stick.length, laid.section, rules):
+            self._notes.lying_column(record)
+            self._add_member(record, placed, laid)
+        else:
+            self._bearing.add_column(record, placed, laid)
 
     def _read_carrier(self, record: Record) -> None:
-        frame = self._elements.frame(record)
-        shape = self._elements.shape(record)
-        self._add_carrier(record, shape, frame, self._elements.choice(record), record.ifc_class)
-
-    def _read_slab(self, record: Record) -> None:
-        frame = self._elements.frame(record)
-        shape = self._elements.shape(record)
-        extent = self._add_carrier(
-            record, shape, frame, self._elements.choice(record), record.ifc_class
-        )
-        self._add_area(record, shape, frame, extent)
-
-    def _read_space(self, record: Record) -> None:
-        frame = self._elements.frame(record)
-        shape = self._elements.shape(record)
-        extent = self._extents.extent(shape.items, frame)
-        if extent is None:
-            raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
-        self._add_area(record, shape, frame, extent)
-
-    def _add_area(self, record: Record, shape: Shape, frame: Frame, extent: Extent) -> None:
-        area = self._area_reader.area(record, shape.items, frame, extent)
-        if area is not None:
-            self._areas.append(area)
-
-    def _add_column(
-        self, record: Record, shape: Shape, frame: Frame, stick: Stick, choice: Choice
-    ) -> None:
-        extent = self._extents.extent(shape.items, frame)
-        if extent is None:
-            extent = self._extents.of_stick(stick, frame)
-        lying = self._layer.lay(stick, frame)
-        if lying.start[2] > lying.end[2]:
-            stick = stick.reversed()
-            lying = self._layer.lay(stick, frame)
-        section, _ = self._sections(record, stick, lying.matrix)
-        self._append(record, record.ifc_class, extent, choice, lying, section)
-
-    def _add_carrier(
-        self, record: Record, shape: Shape, frame: Frame, choice: Choice, ifc_class: str
-    ) -> Extent:
-        extent = self._extents.extent(shape.items, frame)
-        if extent is None:
-            raise UnreadableShapeError("; ".join(shape.troubles) or "it has no body")
-        for piece in self._extents.pieces(shape.items, frame):
-            self._append(record, ifc_class, piece, choice)
-        return extent
-
-    def _append(
-        self,
-        record: Record,
-        ifc_class: str,
-        extent: Extent,
-        choice: Choice,
-        lying: Lying | None = None,
-        section: Section | None = None,
-    ) -> None:
-        _check_place((extent.bottom, extent.top, *(v for corner in extent.corners for v in corner)))
-        elements = self._elements
-        self._carriers.append(
-            Carrier(
-                global_id=record.global_id,
-                name=record.name,
-                ifc_class=ifc_class,
-                bottom=extent.bottom,
-                top=extent.top,
-                corners=extent.corners,
-                start=lying.start if lying else None,
-                end=lying.end if lying else None,
-                section=section,
-                material=elements.material(record, choice) if lying else None,
-                storey=elements.storey(record),
-                up=lying.up if lying else (1.0, 0.0, 0.0),
-            )
-        )
+        self._bearing.add(record, self._laying.placed(record), record.ifc_class)
 
     def _note_relations(self) -> None:
         relations, file = self._elements.relations, self._source.file
@@ -350,15 +245,7 @@ class _Reader:
             record = Record.of(file.by_id(key))
             if record.global_id in mine:
                 note_two_containers(record, containers, self._notes)
-        for key in self._area_reader.openings:
+        for key in self._bearing.areas_of.openings:
             record = Record.of(file.by_id(key))
             if record.global_id in mine:
                 note_openings(record, self._notes)
-
-
-def _check_place(coordinates: Iterable[float]) -> None:
-    """Raise UnreadableShapeError for numbers that are nowhere on earth (m)."""
-    if not all(-_FARTHEST < value < _FARTHEST for value in coordinates):
-        raise UnreadableShapeError(
-            f"its coordinates are no finite numbers below {_FARTHEST / 1e3:,.0f} km"
-        )

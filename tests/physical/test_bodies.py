@@ -337,9 +337,87 @@ def test_a_haunched_plate_is_said_to_taper(tmp_path):
 
     member = only_member(maker, tmp_path)
 
-    # Sections are cut 2 % from either end.
-    assert member.section.depth == pytest.approx(0.306, abs=0.01)
-    assert member.end_section.depth == pytest.approx(0.594, abs=0.01)
+    # The line runs from middle to middle, 1.4° up; the sections are at right angles to it.
+    assert member.start[2] == pytest.approx(0.15, abs=0.005)
+    assert member.end[2] == pytest.approx(0.3, abs=0.005)
+    assert member.section.depth == pytest.approx(0.3, rel=0.01)
+    assert member.end_section.depth == pytest.approx(0.6, rel=0.01)
+
+
+def test_a_haunch_at_one_end_only_is_named(tmp_path):
+    maker = Maker()
+    upright = maker.axes((0, 60, 0), (0, -1, 0), (1, 0, 0))
+    profile = maker.polygon([(0, 0), (1500, 0), (2400, 300), (6000, 300), (6000, 600), (0, 600)])
+    maker.element("IfcBeam", "P", [maker.extrusion(profile, 120.0, upright)])
+
+    building = maker.read(tmp_path)
+
+    assert building.members[0].end_section is None
+    assert building.members[0].section.depth == pytest.approx(0.3, rel=1e-6)
+    text = " ".join(f.message for f in building.findings if f.slug == "body-assumed")
+    assert "varies along it" in text
+
+
+def test_a_plate_girder_of_three_extrusions_is_one_section(tmp_path):
+    # Flanges 200 x 20, web 10 x 360: the section of an I without fillets.
+    maker = Maker()
+    plates = [
+        maker.extrusion(maker.rectangle(w, h), 6000.0, maker.lying((0, 0, z)))
+        for w, h, z in ((200.0, 20.0, 190.0), (10.0, 360.0, 0.0), (200.0, 20.0, -190.0))
+    ]
+    beam = maker.element("IfcBeam", "G", plates)
+
+    building = maker.read(tmp_path)
+
+    (member,) = building.members
+    exact = (200.0 * 400.0**3 - 190.0 * 360.0**3) / 12.0 * 1e-12
+    assert member.section.inertia == pytest.approx(exact, rel=1e-12)
+    assert member.section.depth == pytest.approx(0.4)
+    assert ends(member) == pytest.approx(np.array([[0, 0, 0], [6.0, 0, 0]]), abs=1e-9)
+    assert fits_library_box(maker, beam, member)
+    assert "3 parts that run side by side" in building.findings[0].message
+
+
+def test_a_plate_girder_of_three_bodies_with_faces_is_one_section(tmp_path):
+    maker = Maker()
+    plates = []
+    for w, h, z in ((200.0, 20.0, 180.0), (10.0, 360.0, -180.0), (200.0, 20.0, -200.0)):
+        points = [(x, y - 0.5 * w, v + z) for x, y, v in box_points(6000.0, w, h)]
+        plates.append(maker.brep(points, box_faces()))
+    maker.element("IfcBeam", "G", plates, kind="Brep")
+
+    member = only_member(maker, tmp_path)
+
+    exact = (200.0 * 400.0**3 - 190.0 * 360.0**3) / 12.0 * 1e-12
+    assert member.section.inertia == pytest.approx(exact, rel=1e-9)
+
+
+def test_a_solid_taken_away_shortens_the_line_at_an_end_only(tmp_path):
+    maker = Maker()
+    solid = maker.extrusion(maker.rectangle(200.0, 300.0), 6000.0, maker.lying())
+    end_cut = maker.extrusion(maker.rectangle(400.0, 600.0), 500.0, maker.lying((-250, 0, 0)))
+    hole = maker.extrusion(maker.rectangle(100.0, 100.0), 800.0, maker.axes((3000, 0, -400)))
+    once = maker.make("IfcBooleanResult", "DIFFERENCE", solid, end_cut)
+    twice = maker.make("IfcBooleanResult", "DIFFERENCE", once, hole)
+    maker.element("IfcBeam", "B", [twice], kind="CSG")
+
+    assert ends(only_member(maker, tmp_path)) == pytest.approx(
+        np.array([[0.25, 0, 0], [6.0, 0, 0]]), abs=1e-6
+    )
+
+
+def test_the_origin_of_a_map_counts_as_the_geometry_library_counts_it(tmp_path):
+    maker = Maker()
+    solid = maker.extrusion(maker.rectangle(200.0, 300.0), 6000.0, maker.lying())
+    inner = maker.make("IfcShapeRepresentation", maker.context, "Body", "SweptSolid", [solid])
+    source = maker.make("IfcRepresentationMap", maker.axes((1000, 0, 0)), inner)
+    target = maker.make(
+        "IfcCartesianTransformationOperator3D", LocalOrigin=maker.point(0.0, 2000.0, 0.0)
+    )
+    item = maker.make("IfcMappedItem", source, target)
+    beam = maker.element("IfcBeam", "B", [item], kind="MappedRepresentation")
+
+    assert fits_library_box(maker, beam, only_member(maker, tmp_path))
 
 
 def test_a_tapered_extrusion_has_two_sections(tmp_path):

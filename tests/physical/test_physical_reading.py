@@ -417,6 +417,34 @@ def test_a_whole_is_read_by_its_parts(tmp_path):
     assert ends(member) == pytest.approx(np.array([[0, 0.1, 3.0], [6.0, 0.1, 3.0]]))
 
 
+def test_beams_within_beams_are_read_once(tmp_path):
+    maker = Maker()
+    whole = beam(maker, "whole", at=(0, 0, 3000))
+    inner = beam(maker, "layer", size=(200.0, 100.0), at=(0, 0, 3100))
+    maker.root("IfcRelAggregates", RelatingObject=whole, RelatedObjects=[inner])
+    shell = maker.element("IfcBeam", "shell")
+    left, right = beam(maker, "left", 3000.0), beam(maker, "right", 3000.0, at=(3000, 0, 0))
+    maker.root("IfcRelAggregates", RelatingObject=shell, RelatedObjects=[left, right])
+
+    building = maker.read(tmp_path)
+
+    assert {m.name for m in building.members} == {"whole", "left", "right"}
+    text = " ".join(f.message for f in building.findings if f.slug == "not-a-beam")
+    assert "('layer') not taken as beams: part of a beam that is read as a whole" in text
+    assert "('shell') not taken as beams: drawn by its parts" in text
+
+
+def test_a_column_that_lies_flat_is_a_beam(tmp_path):
+    maker = Maker()
+    solid = maker.extrusion(maker.rectangle(200.0, 300.0), 6000.0, maker.lying())
+    maker.element("IfcColumn", "C", [solid])
+
+    building = maker.read(tmp_path)
+
+    assert [m.name for m in building.members] == ["C"]
+    assert "lying-column" in slugs(building)
+
+
 # Storeys, types, names
 
 
