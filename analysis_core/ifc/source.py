@@ -45,8 +45,14 @@ class Source:
 
     @property
     def has_analysis_model(self) -> bool:
-        """Whether the file states members of an analysis model."""
-        return bool(self.file.by_type("IfcStructuralCurveMember"))
+        """Whether the file states members of an analysis model that is not one we posted.
+
+        Our own is the idealisation of an earlier revision; it must not stand in for the building.
+        """
+        from analysis_core.ifc.ours import MODEL_TYPE  # what is ours is known to the writer
+
+        members = self.file.by_type("IfcStructuralCurveMember")
+        return any(member.ObjectType != MODEL_TYPE for member in members)
 
 
 def open_model(path: str | Path) -> Source:

@@ -54,7 +54,7 @@ class PhysicalPart:
         storeys = {
             name: w.new(
                 "IfcBuildingStorey", Name=name, CompositionType="ELEMENT",
-                Elevation=w.lengths(level), ObjectPlacement=self._at(),
+                Elevation=w.lengths(level), ObjectPlacement=self._at((0.0, 0.0, level)),
             )
             for name, level in scenario.LEVELS.items()
         }  # fmt: skip
