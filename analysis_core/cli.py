@@ -13,7 +13,7 @@ import sys
 from collections.abc import Callable, Sequence
 from dataclasses import replace
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from analysis_core import __version__, pipeline
 from analysis_core.errors import AnalysisError, JobError
@@ -27,6 +27,9 @@ from analysis_core.tables import (
     survey_text,
 )
 from analysis_core.units import display_units
+
+if TYPE_CHECKING:
+    from analysis_core.ifc.writer import PostReport
 
 OK, INCOMPLETE, FAILED = 0, 1, 2
 
@@ -165,6 +168,15 @@ def _post_options(commands: Any) -> None:
         help="take everything out that was posted, and solve nothing",
     )
     command.add_argument(
+        "--section", metavar="TARGET=PROFILE", action="append", default=[],
+        help="first give the members of a line, or the element of a GlobalId, another section: a "
+        "profile of the model or of the job file's section table (may be repeated)",
+    )  # fmt: skip
+    command.add_argument(
+        "--material", metavar="TARGET=NAME", action="append", default=[],
+        help="the same for a material of the model or the job file (may be repeated)",
+    )  # fmt: skip
+    command.add_argument(
         "--stations", type=_station_count, default=21, metavar="N", help=argparse.SUPPRESS
     )
 
@@ -246,9 +258,13 @@ def _balance(options: argparse.Namespace) -> int:
 
 def _post(options: argparse.Namespace) -> int:
     target = Path(options.model if options.in_place else options.output)
+    if options.remove and (options.section or options.material):
+        raise JobError("'--remove' writes nothing new, so it takes no '--section' or '--material'.")
     if options.remove:
         return _take_out(options.model, target)
     settings = _settings(options)
+    if options.section or options.material:
+        return _update(options, settings, target)
     found = pipeline.survey(options.model, settings, progress=_progress(), only=options.line)
     outcome = pipeline.solve(found, settings, progress=_progress())
     chosen = pipeline.of_lines(outcome, options.line)
@@ -257,6 +273,35 @@ def _post(options: argparse.Namespace) -> int:
         outcome, options.model, target, only=options.line, analysis_model=options.analysis_model
     )
     return _status(chosen)
+
+
+def _update(options: argparse.Namespace, settings: Settings, target: Path) -> int:
+    from analysis_core.member_update import changes_data, changes_text, pairs
+
+    if options.line:
+        raise JobError(
+            "'--line' does not go with '--section' and '--material': what bears on a changed "
+            "member changes as well, so all lines are posted. Leave it out."
+        )
+    done = pipeline.update_members(
+        options.model,
+        target,
+        settings,
+        sections=pairs(options.section, "--section"),
+        materials=pairs(options.material, "--material"),
+        analysis_model=options.analysis_model,
+        progress=_progress(),
+    )
+    _put(
+        options,
+        lambda: {
+            **pipeline.document(done.outcome, stations=options.stations),
+            "changes": changes_data(done.changes),
+        },
+        changes_text(done.changes),
+    )
+    _tell_posted(done.report, target)
+    return _status(done.outcome)
 
 
 def _take_out(source: str, target: Path) -> int:
@@ -285,6 +330,10 @@ def _post_to(
     report = pipeline.post(
         outcome, source, target, progress=_progress(), only=only, analysis_model=analysis_model
     )
+    _tell_posted(report, target)
+
+
+def _tell_posted(report: PostReport, target: Path) -> None:
     notes = findings_text(report.findings)
     print(
         f"Posted into '{safe(str(target))}': {report.written} property sets new, "

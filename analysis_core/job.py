@@ -6,9 +6,11 @@ for editors.
 
 from __future__ import annotations
 
+import csv
 import json
 import math
 from collections.abc import Mapping
+from dataclasses import replace
 from importlib import resources
 from pathlib import Path
 from typing import Any
@@ -17,6 +19,7 @@ import yaml
 
 from analysis_core.errors import JobError
 from analysis_core.job_check import Position, check
+from analysis_core.job_sections import csv_rows, table_sections
 from analysis_core.settings import (
     ActionSetting,
     Analysis,
@@ -57,28 +60,60 @@ def load(path: str | Path) -> Settings:
     Raises JobError in one sentence that names the place, what was received and what is permitted.
     """
     path = Path(path)
+    text = _text(path, "Job file")
     try:
-        raw = path.read_bytes()
-    except OSError as error:
-        reason = error.strerror or error
-        raise JobError(f"Job file '{path}' cannot be read: {reason}.") from None
-    try:
-        text = raw.decode("utf-8-sig")
-    except UnicodeDecodeError:
-        raise JobError(f"Job file '{path}' is not UTF-8 text; save it as UTF-8.") from None
-    try:
-        return parse(text)
+        return parse(text, folder=path.parent)
     except JobError as error:
         raise JobError(f"Job file '{path}': {error}") from None
 
 
-def parse(text: str) -> Settings:
-    """Return the settings that the text of a job file states.  Raises JobError."""
+def parse(text: str, *, folder: Path | None = None) -> Settings:
+    """Return the settings that the text of a job file states.  Raises JobError.
+
+    ``folder``: where the job file stands, for a section table in a file beside it; without, such
+    a table is named in the settings but not read.
+    """
     if len(text) > _LARGEST:
         raise JobError(f"It is {len(text)} characters long; a job file has at most {_LARGEST}.")
     data = read_yaml(text)
     checked = check({} if data is None else data, schema())
+    table = checked.get("section_table", ())
+    if isinstance(table, str):
+        return replace(
+            _settings({**checked, "section_table": _table_of(table, folder)}, text),
+            section_table_file=table,
+        )
     return _settings(checked, text)
+
+
+def _text(path: Path, what: str) -> str:
+    try:
+        raw = path.read_bytes()
+    except OSError as error:
+        reason = error.strerror or error
+        raise JobError(f"{what} '{path}' cannot be read: {reason}.") from None
+    try:
+        return raw.decode("utf-8-sig")
+    except UnicodeDecodeError:
+        raise JobError(f"{what} '{path}' is not UTF-8 text; save it as UTF-8.") from None
+
+
+def _table_of(name: str, folder: Path | None) -> Any:
+    """The checked rows of a section table in a file of its own."""
+    if folder is None:
+        return ()
+    text = _text(folder / name, "Section table")
+    try:
+        if len(text) > _LARGEST:
+            raise JobError(f"it is {len(text)} characters long; {_LARGEST} are allowed.")
+        rows = csv_rows(text) if name.lower().endswith(".csv") else read_yaml(text)
+        if isinstance(rows, dict) and set(rows) == {"section_table"}:
+            rows = rows["section_table"]
+        if not isinstance(rows, list):
+            raise JobError("it must be a list of sections.")
+        return check({"section_table": rows}, schema())["section_table"]
+    except (JobError, csv.Error) as error:
+        raise JobError(f"Section table '{name}': {error}") from None
 
 
 def read_yaml(text: str) -> Any:
@@ -152,6 +187,7 @@ def _settings(data: Mapping[str, Any], text: str) -> Settings:
         releases=each("releases", _release),
         materials=each("materials", _material),
         sections=each("sections", _section),
+        section_table=table_sections(data.get("section_table", ())),
         limits=each("limits", _limits),
         checks=_checks(data.get("checks", {})),
         text=text,

@@ -7,6 +7,7 @@ it and nothing else.
 from __future__ import annotations
 
 import difflib
+import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from datetime import datetime
@@ -34,6 +35,7 @@ from analysis_core.units import display_units
 
 if TYPE_CHECKING:
     from analysis_core.checking import MemberChecks
+    from analysis_core.ifc.updating import Change
     from analysis_core.ifc.writer import PostReport, RemoveReport
     from analysis_core.posted_states import PostedState
     from analysis_core.sheet.html import Markup
@@ -78,6 +80,15 @@ class Survey:
     """"analytical" or "physical"."""
     posted: Mapping[str, tuple[Posted, ...]] = field(default_factory=dict)
     """What was posted earlier, by the GlobalId of the element."""
+
+
+@dataclass(frozen=True, slots=True)
+class MemberUpdate:
+    """What updating members did: the results of the changed model, and all that was changed."""
+
+    outcome: Outcome
+    report: PostReport
+    changes: tuple[Change, ...]
 
 
 def survey(
@@ -261,6 +272,49 @@ def remove(source: str | Path, target: str | Path) -> RemoveReport:
     return writer.remove(source, target)
 
 
+def update_members(
+    source: str | Path,
+    target: str | Path,
+    settings: Settings | None = None,
+    *,
+    sections: Mapping[str, str] | None = None,
+    materials: Mapping[str, str] | None = None,
+    analysis_model: bool = False,
+    progress: Progress | None = None,
+) -> MemberUpdate:
+    """Write changed sections and materials into a copy of a model, solve it again and post.
+
+    ``sections`` and ``materials`` give the name of a profile or material, of the model or the job
+    file, by the mark of a line or the GlobalId of an element.  ``target`` may be ``source``.
+    Everything is written at once, or nothing.  Raises IfcReadError, JobError, IfcWriteError.
+    """
+    from analysis_core.ifc.updating import update
+    from analysis_core.member_update import check_update, wishes
+
+    settings = settings or Settings()
+    marks = known_marks(read_posted(ifc_source.open_model(source)))
+    with tempfile.TemporaryDirectory() as folder:
+        copy = Path(folder) / Path(source).name
+        remove(source, copy)
+        before = _with_marks(read(copy, settings, progress=progress), marks)
+        found = idealised(before, settings)
+        wanted = wishes(
+            found.model,
+            before.building,
+            settings,
+            sections=sections or {},
+            materials=materials or {},
+        )
+        updated = update(copy, wanted, settings)
+        copy.write_bytes(b"".join(updated.parts))
+        after = read(copy, settings, progress=progress)
+        check_update(updated, after.building)
+        marks = {e: line.mark for line in found.model.lines for e in line.elements}
+        outcome = solve(idealised(_with_marks(after, marks), settings), settings, progress=progress)
+        report = post(outcome, copy, target, progress=progress, analysis_model=analysis_model)
+    return MemberUpdate(outcome, report, updated.changes)
+
+
 def checks(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks, ...]]:
     """Return the checks of the members of each balanced line by its mark.  Raises JobError."""
     from analysis_core.checking import check_lines
@@ -425,6 +479,10 @@ def _asked_of_reading(settings: Settings) -> Settings:
         "supports", "releases", "sections", "limits", "checks",
     )  # fmt: skip
     return replace(settings, **{name: getattr(blank, name) for name in later})
+
+
+def _with_marks(reading: Reading, marks: Mapping[str, str]) -> Reading:
+    return replace(reading, building=replace(reading.building, known_marks=marks))
 
 
 def _names(building: Building) -> dict[str, str]:

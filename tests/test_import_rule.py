@@ -32,7 +32,8 @@ MAY_IMPORT: dict[str, frozenset[str]] = {
     "ifc": DATA,
     # Rule sets are read like job files and name the arrangements that effects knows.
     "rules": DATA | {"job", "job_check", "effects"},
-    "job": PLAIN | {"job_check"},
+    "job": PLAIN | {"job_check", "job_sections"},
+    "job_sections": PLAIN,
     "job_check": PLAIN,
     "job_edit": PLAIN | {"job"},
 }
@@ -42,7 +43,7 @@ THIRD_PARTIES: dict[str, frozenset[str] | None] = {
     "ifcopenshell": frozenset({"ifc"}),
     "yaml": frozenset({"job", "job_edit", "rules"}),
 }
-WITHOUT_NUMPY = PLAIN | {"sheet", "rules", "job", "job_check", "job_edit"}
+WITHOUT_NUMPY = PLAIN | {"sheet", "rules", "job", "job_check", "job_edit", "job_sections"}
 
 
 def test_every_part_of_the_core_imports_only_what_it_may():
