@@ -11,6 +11,12 @@ from analysis_core.settings import Settings
 from analysis_core.solving import Rules
 
 
+_NO_CASES = (
+    "The model states no load case and self weight is off, so there is nothing to combine. State "
+    "cases and actions in the job file."
+)
+
+
 def choose(model: LineModel, settings: Settings) -> tuple[Rules, list[Finding]]:
     """Return what the lines are combined by, and what was assumed about the cases.
 
@@ -21,6 +27,8 @@ def choose(model: LineModel, settings: Settings) -> tuple[Rules, list[Finding]]:
     asked = settings.rules
     rule_set = rule_sets.load(asked.name, asked.replace)
     findings = list(rule_sets.classify(rule_set, model.cases).findings)
+    if model.lines and not model.cases:
+        findings.append(Finding("warning", "no-cases", _NO_CASES))
     arrangements = rule_sets.arrangements(
         rule_set,
         model.cases,
