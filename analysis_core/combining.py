@@ -10,7 +10,6 @@ from analysis_core.model import Combination, LineModel
 from analysis_core.settings import Settings
 from analysis_core.solving import Rules
 
-
 _NO_CASES = (
     "The model states no load case and self weight is off, so there is nothing to combine. State "
     "cases and actions in the job file."
