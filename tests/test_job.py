@@ -15,6 +15,7 @@ title: Quarry Lane Workshops
 display: {system: us, units: {force: lbf}}
 analysis: {route: physical, shear_flexible: true, columns_as_legs: true, include: [IfcBeam]}
 tolerances: {join: 25 mm, collinear: 1 deg}
+beams: {least_length: 300 mm, least_slenderness: 2.5, judge_by_role: false}
 rules:
   set: en-1990
   combinations: both
@@ -59,6 +60,8 @@ def test_quantities_arrive_in_si(settings):
     assert polygonal.stations == (0.0, 2.0, 5.0)
     assert temperature.values == (-15.0,)
     assert settings.tolerances.collinear == pytest.approx(math.radians(1.0))
+    assert (settings.beams.least_length, settings.beams.least_slenderness) == (0.3, 2.5)
+    assert not settings.beams.judge_by_role
     assert settings.materials[0].strength == {"fck": 30e6}
     assert settings.sections[0].inertia == pytest.approx(2.313e-4)
 
