@@ -14,35 +14,39 @@ from analysis_core.effects.deflection_limits import (
 )
 from analysis_core.effects.envelopes import envelope
 from analysis_core.effects.faces import SupportMoment, support_moments
-from analysis_core.effects.redistribution import chosen_fractions, redistribute
-from analysis_core.effects.redistribution_limits import (
-    Known,
-    Limit,
-    largest_allowed,
-    unmet_conditions,
-)
+from analysis_core.effects.redistribution import redistribute
+from analysis_core.effects.redistribution_limits import Limit
+from analysis_core.effects.redistribution_plan import Plan, plan_redistribution
 from analysis_core.effects.states import State, governing_states
 from analysis_core.errors import ModelError
 from analysis_core.line_selection import chooses
 from analysis_core.model import Combination, LineModel
 from analysis_core.results import LineEnvelope, LineResult, LineSolution
 from analysis_core.rules import RuleSet
-from analysis_core.settings import Limits, Redistribution, Settings
+from analysis_core.settings import Limits, Settings
 
 
 @dataclass(frozen=True, slots=True)
 class Redistributed:
     """Strength effects after redistribution, beside the elastic ones of the line's result.
 
-    ``fractions`` by joint; ``limit`` what the rule set allows and on what conditions; ``unmet``
-    the conditions that the line itself does not meet.  ``problem`` says why nothing was done.
+    ``plan``: the fractions by joint, what the rule set allows, and findings.  ``problem`` says why
+    nothing was done where ``envelope`` is None.
     """
 
-    fractions: Mapping[int, float]
-    limit: Limit | None
-    unmet: tuple[str, ...]
+    plan: Plan
     envelope: LineEnvelope | None
     problem: str = ""
+
+    @property
+    def fractions(self) -> Mapping[int, float]:
+        """Fraction of the support moment by joint."""
+        return self.plan.fractions
+
+    @property
+    def limit(self) -> Limit | None:
+        """What the rule set allows, and on what conditions."""
+        return self.plan.limit
 
 
 @dataclass(frozen=True, slots=True)
@@ -146,21 +150,14 @@ def _redistributed(given: DetailInput) -> Redistributed | None:
     )  # fmt: skip
     if asked is None:
         return None
-    limit = _allowed(given, asked)
-    fraction = asked.fraction
-    if asked.largest:
-        fraction = limit.fraction if limit is not None else 0.0
-    unmet = unmet_conditions(limit.rule, line) if limit is not None else ()
-    fractions = chosen_fractions(line, fraction, asked.per_joint)
-    if not fractions:
-        reason = limit.missing if limit is not None and limit.missing else (
-            "No support moment of this line can be redistributed."
-        )  # fmt: skip
-        return Redistributed({}, limit, unmet, None, reason)
+    rules = given.rule_set
+    plan = plan_redistribution(line, asked, rules.redistribution, rules.values())
+    if not plan.fractions:
+        return Redistributed(plan, None, "No support moment of this line can be redistributed.")
     try:
-        reduced = redistribute(line, given.parts, fractions)
+        reduced = redistribute(line, given.parts, plan.fractions)
     except ModelError as error:
-        return Redistributed(fractions, limit, unmet, None, str(error))
+        return Redistributed(plan, None, str(error))
     found = envelope(
         given.spans,
         reduced,
@@ -168,23 +165,4 @@ def _redistributed(given: DetailInput) -> Redistributed | None:
         limit_state="strength",
         arrangements=given.arrangements,
     )
-    return Redistributed(fractions, limit, unmet, found)
-
-
-def _allowed(given: DetailInput, asked: Redistribution) -> Limit | None:
-    """The limit for the material of the line's first member that has one."""
-    for member in given.spans.line.members:
-        if member.material is None:
-            continue
-        rule = given.rule_set.redistribution.get(member.material.category)
-        if rule:
-            strength = dict(member.material.strength).get("fck")
-            known = Known(
-                neutral_axis_ratio=asked.neutral_axis_ratio,
-                concrete_strength=strength,
-                ductility=asked.ductility,
-                net_tensile_strain=asked.net_tensile_strain,
-                section_class=asked.section_class,
-            )
-            return largest_allowed(rule, given.rule_set.values(), known)
-    return None
+    return Redistributed(plan, found)

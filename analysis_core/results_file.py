@@ -231,7 +231,6 @@ def _detail(detail: LineDetail) -> dict[str, Any]:
             "allowed": None if found.limit is None else found.limit.fraction,
             "clause": None if found.limit is None else found.limit.clause,
             "conditions": [] if found.limit is None else list(found.limit.conditions),
-            "unmet": list(found.unmet),
             "problem": found.problem,
             "envelope": None if found.envelope is None else _envelope(found.envelope),
         }

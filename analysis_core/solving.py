@@ -27,7 +27,7 @@ from analysis_core.effects.envelopes import envelopes
 from analysis_core.errors import AnalysisError, MechanismError
 from analysis_core.findings import Finding
 from analysis_core.fingerprints import fingerprint
-from analysis_core.line_details import DetailInput, LineDetail, line_detail
+from analysis_core.line_details import DetailInput, LineDetail, detail_of, line_detail
 from analysis_core.line_fingerprints import line_bases
 from analysis_core.load_levels import levels
 from analysis_core.model import Action, Combination, Line, LineModel, PointForce, Transfer
@@ -97,7 +97,14 @@ def solve_lines(
         solver.solve_level(level)
     tell("Solving", 1.0)
     results = _results(model, rules, settings, solver, tell)
+    if settings.rules.redistribution:
+        solver.findings += _redistribution_findings(results)
     return results, solver.findings
+
+
+def _redistribution_findings(results: Sequence[LineResult]) -> list[Finding]:
+    found = [detail_of(r).redistributed for r in results if r.detail is not None]
+    return [finding for each in found if each is not None for finding in each.plan.findings]
 
 
 class _Solver:

@@ -360,7 +360,7 @@ def _limit_text(found: Redistributed) -> str:
     text = f"at most {100.0 * limit.fraction:.0f} % by {limit.clause}"
     if any(part > limit.fraction + 1e-12 for part in found.fractions.values()):
         text += ", WHICH IS EXCEEDED"
-    return "; ".join((text, *limit.conditions, *found.unmet))
+    return "; ".join((text, *limit.conditions))
 
 
 def _reactions_table(outcome: Outcome, units: DisplayUnits) -> str:

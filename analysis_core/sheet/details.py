@@ -64,7 +64,7 @@ def redistribution(
         if found.limit.missing:
             text = f"{found.limit.clause}: the limit could not be found, {found.limit.missing}."
         parts.append(tag("p", text))
-        conditions = [*found.limit.conditions, *found.unmet]
+        conditions = [*found.limit.conditions, *(f.message for f in found.plan.findings)]
         parts.append(tag("ul", [tag("li", c) for c in conditions], class_="table-notes"))
     if found.envelope is None:
         return [*parts, tag("p", found.problem)]
