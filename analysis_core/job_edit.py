@@ -142,7 +142,11 @@ def _plain(text: str) -> Any:
 
 
 def _checked(text: str, wanted: Data) -> str:
-    if _data(text) != wanted:
+    try:
+        right = _data(text) == wanted
+    except JobError:
+        right = False
+    if not right:
         raise JobError(
             "The job file is written in a way that cannot be changed here; change it in a text "
             "editor."

@@ -4,7 +4,14 @@ import pytest
 
 from analysis_core import job
 from analysis_core.errors import JobError
-from analysis_core.job_edit import entries, with_entry, with_replaced, with_value, without_entry
+from analysis_core.job_edit import (
+    entries,
+    stated,
+    with_entry,
+    with_replaced,
+    with_value,
+    without_entry,
+)
 
 TEXT = """\
 # What the model does not say.
@@ -120,3 +127,16 @@ def test_words_that_yaml_would_misread_are_written_so_that_they_come_back():
 def test_a_file_that_is_not_a_mapping_is_refused_in_a_sentence():
     with pytest.raises(JobError, match="not a mapping"):
         with_entry("- 1\n- 2\n", "supports", ENTRY)
+
+
+def test_a_change_that_would_not_read_back_is_refused():
+    text = "supports: [\n  {on: {}, condition: fixed},  # a comma behind the last entry\n]\n"
+
+    with pytest.raises(JobError, match="cannot be changed here"):
+        with_entry(text, "supports", ENTRY)
+
+
+def test_a_stated_value_is_found():
+    assert stated(TEXT, "rules", "set") == "en-1990"
+    assert stated(TEXT, "rules", "arrangements") is None
+    assert stated("", "rules", "set") is None

@@ -40,10 +40,10 @@ def test_a_joint_along_an_element_is_named_by_its_distance(line):
 
 def test_a_reversed_element_counts_from_its_own_start(line):
     members = (replace(line.members[0], element_offset=demo.A, reversed_=True), line.members[1])
+    turned = replace(line, members=members)
 
-    assert decisions.where_is(replace(line, members=members), 0) == decisions.Where(
-        "GID-L1-0", "end"
-    )
+    assert decisions.where_is(turned, 0) == decisions.Where("GID-L1-0", "end")
+    assert decisions.end_of(turned, 0, at_end=True) == decisions.Where("GID-L1-0", "start")
 
 
 def test_a_second_decision_about_the_same_joint_replaces_the_first():

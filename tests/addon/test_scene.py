@@ -29,13 +29,14 @@ def test_members_lie_where_their_joints_are_in_millimetres(scene):
 
 
 def test_positive_ordinates_of_an_inclined_member_stand_square_to_it():
-    # A 3-4-5 member rising along world Y: its local down leans forward.
-    joints = (Joint(0, 0.0, 0.0, (1.0, 2.0, 0.0)), Joint(1, 4.0, 3.0, (1.0, 6.0, 3.0)))
-    line = Line("L", joints, (Member(0, 0, 1, (Piece(5.0, (1.0,)),)),), axis=(0.0, 1.0, 0.0))
+    # A 3-4-5 member rising along a line that is oblique in plan: its local down leans forward.
+    joints = (Joint(0, 0.0, 0.0, (1.0, 2.0, 0.0)), Joint(1, 4.0, 3.0, (3.4, 5.2, 3.0)))
+    line = Line("L", joints, (Member(0, 0, 1, (Piece(5.0, (1.0,)),)),), axis=(0.6, 0.8, 0.0))
 
     scene = scene_of([line])
 
-    assert scene.down[0] == pytest.approx([0.0, 0.6, -0.8])
+    assert scene.down[0] == pytest.approx([0.6 * 0.6, 0.6 * 0.8, -0.8])
+    assert scene.down[0] @ (scene.ends[0, 1] - scene.ends[0, 0]) == pytest.approx(0.0, abs=1e-9)
 
 
 def test_the_area_of_a_filled_diagram_is_the_integral_of_its_curve(scene):

@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from analysis_core.units import DisplayUnits
 
+from .action_marks import action_rows, draw_actions, short
 from .drawing import Drawing, Fill, Place, Spot, Stroke, Words
 from .strip import (
     UNIT_OF,
@@ -29,7 +30,6 @@ SYMBOL = 13.0
 TITLES = {"moment": noop("Moment"), "shear": noop("Shear"), "deflection": noop("Deflection")}
 # Which way a positive value is drawn: moments on the side in tension, deflections as they go.
 DOWNWARD = {"moment": True, "shear": False, "deflection": True}
-MOST_ACTION_ROWS = 5
 ROW, BAND, BELOW_AXIS = 27.0, 74.0, 68.0
 """Least height of a row of actions and of a curve's band; what lies below the beam's axis."""
 
@@ -56,7 +56,7 @@ def lay_out(
     left = max(LEFT, 1.15 * titles + 44.0)  # titles are bold; labels hang over the first joint
     drawing = Drawing(width, height, left, max(width - left - RIGHT, 40.0) / length)
     shown = [q for q in quantities if q in strip.curves]
-    rows = _action_rows(strip.actions)
+    rows = action_rows(strip.actions)
     spare = max(height - least_height(strip, quantities), 0.0)
     elevation = _least_elevation(rows) + (0.25 * spare if shown else spare)
     _elevation(drawing, strip, rows, elevation, units, measure, chosen)
@@ -70,7 +70,7 @@ def lay_out(
 def least_height(strip: Strip, quantities: Sequence[str]) -> float:
     """Return the height in pixels that a strip needs to be read."""
     shown = sum(q in strip.curves for q in quantities)
-    return _least_elevation(_action_rows(strip.actions)) + BAND * shown + 4.0
+    return _least_elevation(action_rows(strip.actions)) + BAND * shown + 4.0
 
 
 def _least_elevation(rows: Sequence[object]) -> float:
@@ -92,10 +92,10 @@ def _elevation(
     for number, (case, actions) in enumerate(rows):
         if case != named:
             at = axis - 18.0 - row_height * (len(rows) - 1 - number) - 6.0
-            drawing.words.append(Words(10.0, at, _short(case, 11), "action", "left", small=True))
+            drawing.words.append(Words(10.0, at, short(case, 11), "action", "left", small=True))
             named = case
         bottom = axis - 18.0 - row_height * (len(rows) - 1 - number)
-        _actions(drawing, strip, case, actions, bottom, row_height, measure)
+        draw_actions(drawing, strip, case, actions, bottom, row_height, measure)
     if not rows:
         words = Words(drawing.to_pixel(0.0), axis - 28.0, say("no action here"), "faint", "left")
         drawing.words.append(words)
@@ -177,114 +177,6 @@ def _dimensions(
         if measure(words) < right - left - 4.0:
             drawing.words.append(Words((left + right) / 2.0, y + 9.0, words, "ink", small=True))
     drawing.words.append(Words(10.0, y + 9.0, units.symbol("length"), "faint", "left", small=True))
-
-
-def _action_rows(actions: Sequence[ShownAction]) -> list[tuple[str, list[ShownAction]]]:
-    """Return (case, actions) per row; actions of a case that lie over one another get rows each."""
-    by_case: dict[str, list[list[ShownAction]]] = {}
-    for action in actions:
-        layers = by_case.setdefault(action.case, [])
-        for layer in layers:
-            if not any(_overlap(action, other) for other in layer):
-                layer.append(action)
-                break
-        else:
-            layers.append([action])
-    rows = [(case, layer) for case, layers in by_case.items() for layer in layers]
-    if len(rows) <= MOST_ACTION_ROWS:
-        return rows
-    kept = rows[: MOST_ACTION_ROWS - 1]
-    return [*kept, (say("{count} more", count=len(rows) - len(kept)), [])]
-
-
-def _overlap(one: ShownAction, other: ShownAction) -> bool:
-    if one.kind != "spread" or other.kind != "spread":
-        return False
-    return one.start < other.end - 1e-6 and other.start < one.end - 1e-6
-
-
-def _actions(
-    drawing: Drawing,
-    strip: Strip,
-    case: str,
-    actions: list[ShownAction],
-    bottom: float,
-    row_height: float,
-    measure: Measure,
-) -> None:
-    largest = max((max(abs(a.low), abs(a.high)) for a in actions if a.kind == "spread"), default=0)
-    room = max(row_height - 16.0, 6.0)
-    taken: list[tuple[float, float]] = []
-    for action in actions:
-        left, right = drawing.to_pixel(action.start), drawing.to_pixel(action.end)
-        if action.kind == "spread":
-            _spread(drawing, action, left, right, bottom, room / largest if largest else 0.0)
-        else:
-            _single(drawing, action, left, right, bottom, room)
-        _label(drawing, action, (left + right) / 2.0, bottom - room - 6.0, measure, taken)
-        drawing.spots.append(
-            Spot(left - 4.0, bottom - room - 12.0, right + 4.0, bottom + 2.0, "action",
-                 strip.line.actions.index(action.action), f"{case}: {action.words}")
-        )  # fmt: skip
-
-
-def _label(
-    drawing: Drawing, action: ShownAction, x: float, y: float, measure: Measure,
-    taken: list[tuple[float, float]],
-) -> None:  # fmt: skip
-    half = measure(action.words) / 2.0
-    if any(x - half < right and x + half > left for left, right in taken):
-        return  # its words are in the tooltip
-    taken.append((x - half, x + half))
-    drawing.words.append(Words(x, y, action.words, "action", small=True))
-
-
-def _spread(
-    drawing: Drawing, action: ShownAction, left: float, right: float, bottom: float, scale: float
-) -> None:
-    low, high = (bottom - max(scale * abs(v), 2.0) for v in (action.low, action.high))
-    box = ((left, bottom), (left, low), (right, high), (right, bottom))
-    drawing.fills.append(Fill(box, "action", 0.16))
-    drawing.strokes.append(Stroke((*box, box[0]), "action", 1.0))
-    down = action.low + action.high >= 0.0
-    at = np.linspace(left, right, max(int((right - left) / 34.0), 1) + 1).tolist()
-    first, *more = (_arrow_head(x, bottom if down else bottom - 5.0, down) for x in at)
-    drawing.strokes.append(Stroke(first, "action", 1.2, more=tuple(more)))
-
-
-def _single(
-    drawing: Drawing, action: ShownAction, left: float, right: float, bottom: float, room: float
-) -> None:
-    if action.kind == "couple":
-        turn = np.linspace(-2.4, 2.4, 15) if action.low >= 0.0 else np.linspace(2.4, -2.4, 15)
-        radius = room / 2.0
-        points = tuple(
-            (left + radius * np.sin(a), bottom - radius - radius * np.cos(a)) for a in turn
-        )
-        drawing.strokes.append(Stroke(points, "action", 1.6))
-        _head(drawing, points[-2], points[-1])
-        return
-    if action.kind == "curvature":
-        drawing.strokes.append(Stroke(((left, bottom), (right, bottom)), "action", 1.6, True))
-        return
-    if action.kind == "movement":
-        drawing.strokes.append(Stroke(((left, bottom - room), (left, bottom)), "action", 1.6, True))
-    else:
-        drawing.strokes.append(Stroke(((left, bottom - room), (left, bottom)), "action", 1.8))
-    drawing.strokes.append(Stroke(_arrow_head(left, bottom, action.low >= 0.0), "action", 1.2))
-
-
-def _arrow_head(x: float, y: float, down: bool) -> tuple[Place, ...]:
-    side = -5.0 if down else 5.0
-    return (x - 3.0, y + side), (x, y), (x + 3.0, y + side)
-
-
-def _head(drawing: Drawing, before: Place, tip: Place) -> None:
-    direction = np.array(tip) - np.array(before)
-    direction /= np.hypot(*direction) or 1.0
-    across = np.array((-direction[1], direction[0]))
-    a, b = (np.array(tip) - 5.0 * direction + side * 3.0 * across for side in (1.0, -1.0))
-    drawing.strokes.append(Stroke((tuple(a), tip, tuple(b)), "action", 1.2))
 
 
 def _band(
@@ -394,7 +286,3 @@ def _peaks(
         role = _role(curve.quantity, peak.value > 0.0)
         drawing.strokes.append(Stroke(((x - 3.0, y), (x + 3.0, y)), role, 3.0))
         drawing.words.append(Words(left, words_y, peak.words, role, bold=True, small=True))
-
-
-def _short(text: str, most: int) -> str:
-    return text if len(text) <= most else f"{text[: most - 1]}…"

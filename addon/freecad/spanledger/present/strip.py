@@ -14,56 +14,22 @@ from numpy.typing import NDArray
 
 from analysis_core.line_details import detail_of
 from analysis_core.model import (
-    Action,
-    DistributedForce,
-    ImposedCurvature,
     Joint,
-    JointForce,
-    JointMovement,
     Line,
     Member,
-    PointForce,
-    PointMoment,
 )
 from analysis_core.results import Extreme, LineEnvelope, LineResult
 from analysis_core.units import DisplayUnits
 
 from .diagrams import Quantity, View, line_ordinates, view_envelopes
+from .shown_actions import ShownAction, chosen_actions, shown_action
+from .stretches import Stretch, stretches_of
 from .words import say
 
 Floats = NDArray[np.float64]
 QUANTITIES: tuple[Quantity, ...] = ("moment", "shear", "deflection")
 UNIT_OF: Mapping[str, str] = {"moment": "moment", "shear": "force", "deflection": "deflection"}
 CURVE_POINTS = 161
-
-
-@dataclass(frozen=True, slots=True)
-class Stretch:
-    """A member on the axis of the strip: from ``start`` to ``end``, m."""
-
-    member: Member
-    start: float
-    end: float
-
-    def to_axis(self, s: float) -> float:
-        """Return where position ``s`` of the member lies on the axis."""
-        return self.start + s
-
-
-@dataclass(frozen=True, slots=True)
-class ShownAction:
-    """An action with the words that tell what it is, and the stretch it acts on (m)."""
-
-    action: Action
-    case: str
-    words: str
-    start: float
-    end: float
-    low: float
-    high: float
-    """Intensity at start and end of the stretch, positive downward (0 where it has none)."""
-    kind: str
-    """"spread", "point", "couple", "curvature", "joint" or "movement"."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -134,29 +100,14 @@ def strip_of(
         line=line,
         title=_title(line, view),
         stretches=stretches,
-        actions=tuple(_shown(a, line, stretches, units, factors) for a in _chosen(line, factors)),
+        actions=tuple(
+            shown_action(action, line, stretches, units, factors)
+            for action in chosen_actions(line, factors)
+        ),
         curves=curves,
         status=result.status,
         sampled=view.kind == "envelope",
     )
-
-
-def stretches_of(line: Line) -> tuple[Stretch, ...]:
-    """Return the members in order along the axis of the strip."""
-    spans = [m for m in line.members if m.role == "span"] if line.kind == "line" else []
-    rest = [m for m in line.members if m not in spans]
-    first = min((line.joints[m.start].x for m in spans), default=0.0)
-    placed = []
-    for member in spans:
-        start = line.joints[member.start].x - first
-        placed.append(Stretch(member, start, start + member.length))
-    at = max((s.end for s in placed), default=0.0)
-    gap = 0.12 * max(at, max(m.length for m in line.members))
-    for member in rest:
-        at += gap if placed else 0.0
-        placed.append(Stretch(member, at, at + member.length))
-        at += member.length
-    return tuple(placed)
 
 
 def joint_places(strip: Strip) -> list[tuple[float, Joint]]:
@@ -229,87 +180,6 @@ def _title(line: Line, view: View) -> str:
     where = f", {line.storey}" if line.storey else ""
     words = say("1 span") if spans == 1 else say("{count} spans", count=spans)
     return f"{line.mark}{where}: {words}; {view.title}"
-
-
-def _chosen(line: Line, factors: Mapping[str, float] | None) -> list[Action]:
-    if factors is None:
-        return list(line.actions)
-    return [a for a in line.actions if factors.get(a.case, 0.0) != 0.0]
-
-
-def _shown(
-    action: Action,
-    line: Line,
-    stretches: tuple[Stretch, ...],
-    units: DisplayUnits,
-    factors: Mapping[str, float] | None,
-) -> ShownAction:
-    factor = 1.0 if factors is None else factors[action.case]
-    prefix = "" if factor == 1.0 else f"{factor:g} × "
-
-    def shown(
-        kind: str, words: str, start: float, end: float, low: float = 0.0, high: float = 0.0
-    ) -> ShownAction:
-        return ShownAction(action, action.case, prefix + words, start, end, low, high, kind)
-
-    if isinstance(action, JointForce | JointMovement):
-        at = _joint_axis(stretches, action.joint)
-        return shown(*_joint_action_words(action, units), at, at)
-    stretch = next(s for s in stretches if s.member.id == action.member)
-    if isinstance(action, DistributedForce):
-        low = action.transverse[0] if action.transverse else 0.0
-        high = _polynomial(action.transverse, action.end - action.start)
-        words = units.text(low, "line load")
-        if units.number(low, "line load") != units.number(high, "line load"):
-            words = f"{units.number(low, 'line load')} … {units.text(high, 'line load')}"
-        return shown(
-            "spread", words, stretch.to_axis(action.start), stretch.to_axis(action.end), low, high
-        )
-    if isinstance(action, PointForce):
-        at = stretch.to_axis(action.position)
-        return shown("point", units.text(action.transverse, "force"), at, at, action.transverse)
-    if isinstance(action, PointMoment):
-        at = stretch.to_axis(action.position)
-        return shown("couple", units.text(action.moment, "moment"), at, at, action.moment)
-    assert isinstance(action, ImposedCurvature)
-    words = say("curvature {value} mrad/m", value=f"{action.curvature * 1e3:.3g}")
-    return shown(
-        "curvature", words, stretch.to_axis(action.start), stretch.to_axis(action.end),
-        action.curvature, action.curvature,
-    )  # fmt: skip
-
-
-def _joint_action_words(action: JointForce | JointMovement, units: DisplayUnits) -> tuple[str, str]:
-    if isinstance(action, JointForce):
-        parts = []
-        if action.vertical:
-            parts.append(units.text(action.vertical, "force"))
-        if action.horizontal:
-            parts.append(say("{force} to the right", force=units.text(action.horizontal, "force")))
-        if action.moment:
-            parts.append(units.text(action.moment, "moment"))
-        return "joint", ", ".join(parts) or "0"
-    parts = []
-    if action.vertical:
-        parts.append(say("moves down {by}", by=units.text(action.vertical, "deflection")))
-    if action.horizontal:
-        parts.append(say("moves right {by}", by=units.text(action.horizontal, "deflection")))
-    if action.rotation:
-        parts.append(say("turns {by}", by=units.text(action.rotation, "rotation")))
-    return "movement", ", ".join(parts) or "0"
-
-
-def _joint_axis(stretches: tuple[Stretch, ...], joint: int) -> float:
-    for stretch in stretches:
-        if stretch.member.start == joint:
-            return stretch.start
-        if stretch.member.end == joint:
-            return stretch.end
-    return 0.0
-
-
-def _polynomial(coefficients: tuple[float, ...], v: float) -> float:
-    return float(sum(c * v**i for i, c in enumerate(coefficients)))
 
 
 def _curve(
