@@ -18,7 +18,7 @@ from __future__ import annotations
 
 import hashlib
 import re
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 from itertools import pairwise
 
@@ -31,7 +31,6 @@ MODEL = "analysis model"
 # Readers commonly keep instance numbers in 32 signed bits.
 _LARGEST_NUMBER = 2**31 - 1
 _ROOM = 2**26
-_CHUNK = 8192
 _NUMBERS = re.compile(rb"(?:^|[\r\n])#(\d+)=")
 
 
@@ -57,7 +56,6 @@ class Lines:
         self.next = first
         self._end = f";{newline.decode()}"
         self._lines: list[str] = []
-        self._chunks: list[bytes] = []
         self._shared: dict[str, int] = {}
 
     def add(self, body: str) -> int:
@@ -65,8 +63,6 @@ class Lines:
         number = self.next
         self.next = number + 1
         self._lines.append(f"#{number}={body}{self._end}")
-        if len(self._lines) >= _CHUNK:
-            self._flush()
         return number
 
     def shared(self, body: str) -> int:
@@ -92,16 +88,11 @@ class Lines:
         self._lines.append(text)
         self.next += count
 
-    def chunks(self) -> list[bytes]:
-        """Return the lines, each with its line end, in pieces."""
-        self._flush()
-        return self._chunks
-
-    def _flush(self) -> None:
-        # In pieces, so that the whole is never held as text and as bytes at once.
-        if self._lines:
-            self._chunks.append("".join(self._lines).encode("ascii"))
-            self._lines = []
+    def taken(self) -> bytes:
+        """Return the lines added since this was asked last, each with its line end."""
+        text = "".join(self._lines)
+        self._lines = []
+        return text.encode("ascii")
 
 
 def first_free(index: StepIndex, kept: bytes = b"") -> int:
@@ -121,21 +112,27 @@ def first_free(index: StepIndex, kept: bytes = b"") -> int:
     return widest + 1
 
 
-def with_block(index: StepIndex, lines: Sequence[bytes], kind: str) -> list[bytes | memoryview]:
-    """Return the file, in parts, with a block of ``lines`` before the end of its data.
+def with_block(index: StepIndex, lines: Iterator[bytes], kind: str) -> Iterator[bytes | memoryview]:
+    """Return the file, part by part, with a block of ``lines`` before the end of its data.
 
     Without marks where the file opens a comment and never closes it: ours would.
     """
-    view = memoryview(index.data)
-    if not any(lines):
-        return [view]
-    assert index.data_end is not None  # the caller has seen to it
-    before, after = view[: index.data_end], view[index.data_end :]
-    if index.stray:
-        return [before, *lines, after]
-    begin = f"/* Spanledger {kind} begin {_digest(index.data)} */".encode() + index.newline
-    end = f"/* Spanledger {kind} end {_digest(*lines)} */".encode() + index.newline
-    return [before, begin, *lines, end, after]
+    view, end = memoryview(index.data), index.data_end
+    assert end is not None  # the caller has seen to it
+    yield view[:end]
+    total = hashlib.sha256()
+    for number, piece in enumerate(filter(None, lines)):
+        if number == 0 and not index.stray:
+            yield _mark(kind, "begin", _digest(index.data), index)
+        total.update(piece)
+        yield piece
+    if total.digest() != hashlib.sha256().digest() and not index.stray:
+        yield _mark(kind, "end", total.hexdigest(), index)
+    yield view[end:]
+
+
+def _mark(kind: str, which: str, digest: str, index: StepIndex) -> bytes:
+    return f"/* Spanledger {kind} {which} {digest} */".encode() + index.newline
 
 
 def cut_block(data: bytes, kind: str) -> Cut | None:
@@ -169,8 +166,5 @@ def _last_mark(data: bytes, start: str) -> re.Match[bytes] | None:
     return re.compile(pattern).match(data, at) if at >= 0 else None
 
 
-def _digest(*pieces: bytes) -> str:
-    total = hashlib.sha256()
-    for piece in pieces:
-        total.update(piece)
-    return total.hexdigest()
+def _digest(data: bytes) -> str:
+    return hashlib.sha256(data).hexdigest()

@@ -12,7 +12,7 @@ import secrets
 import stat
 import sys
 import time
-from collections.abc import Iterable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from pathlib import Path
 
 from analysis_core.errors import IfcWriteError
@@ -35,22 +35,31 @@ def writing_to(target: str | Path, *, wait: float = WAIT_SECONDS) -> Iterator[Pa
         yield path
 
 
-def replace_file(path: Path, chunks: Iterable[bytes | memoryview]) -> None:
+def replace_file(
+    path: Path,
+    chunks: Iterable[bytes | memoryview],
+    *,
+    before: Callable[[], None] = lambda: None,
+) -> None:
     """Write ``chunks`` as the new content of ``path``; call it while ``writing_to`` it.
 
-    Permissions (and the owner, where we may) stay as they were.  Raises IfcWriteError and leaves
-    the old file where anything fails.
+    Permissions (and the owner, where we may) stay as they were.  ``before`` is called before the
+    old file gives way, and may raise.  Raises IfcWriteError and leaves the old file where anything
+    fails.
     """
     temporary = path.with_name(f"{_prefix(path)}{secrets.token_hex(6)}.tmp")
     try:
         try:
             _write(temporary, path, chunks)
+            before()
             os.replace(temporary, path)
         except BaseException:
             with contextlib.suppress(OSError):
                 os.unlink(temporary)
             raise
         _flush_folder(path.parent)
+    except IfcWriteError:
+        raise
     except OSError as error:
         raise IfcWriteError(
             f"'{path.name}' could not be written in '{path.parent}' ({_reason(error)}); what was "

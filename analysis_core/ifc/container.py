@@ -8,7 +8,7 @@ from __future__ import annotations
 import hashlib
 import io
 import zipfile
-from collections.abc import Sequence
+from collections.abc import Iterable
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -32,7 +32,7 @@ class Container:
         """SHA-256 of the file as it lies on the disk, in hexadecimal."""
         return hashlib.sha256(self.stored).hexdigest()
 
-    def packed(self, parts: Sequence[bytes | memoryview]) -> Sequence[bytes | memoryview]:
+    def packed(self, parts: Iterable[bytes | memoryview]) -> Iterable[bytes | memoryview]:
         """Return the file with another text, given in parts, in the same wrapping."""
         if not self.zipped and not self.encoding:
             return parts

@@ -35,6 +35,10 @@ class SetContents:
         self._load = load or dict
         self._verbatim = verbatim
 
+    def __bool__(self) -> bool:
+        """Whether there may be any: false without looking where nothing was there before."""
+        return self._load is not dict
+
     @cached_property
     def _sets(self) -> Mapping[str, Callable[[], Content]]:
         return self._load()

@@ -15,7 +15,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.ifc.step_arrays import Positions, StepArrays
+from analysis_core.ifc.step_arrays import Bytes, Positions, StepArrays
 from analysis_core.ifc.step_blank import Blanked, blank
 from analysis_core.ifc.step_tokens import arguments
 from analysis_core.ifc.step_values import decoded
@@ -25,6 +25,8 @@ _DATA = re.compile(rb"\bDATA\s*[;(]")
 _SCHEMA = re.compile(rb"FILE_SCHEMA\s*\(\s*\(\s*'([^']*)'")
 _STRING = re.compile(r"\s*('(?:[^']|'')*')")
 _REFERENCE = re.compile(r"'(?:[^']|'')*'|#\s*(\d+)")
+_STRETCH = 1 << 22
+"""Bytes that are looked at together; what is worked out of them takes several times as much."""
 _GLOBAL_ID = re.compile(r"[0-9A-Za-z_$]{22}")
 
 
@@ -194,7 +196,12 @@ class StepIndex:
     @cached_property
     def _quotes(self) -> Positions:
         text = self.content if self._countable else self._blanked.text
-        return np.flatnonzero(np.frombuffer(text, dtype=np.uint8) == ord("'"))
+        buffer = np.frombuffer(text, dtype=np.uint8)
+        found = [
+            np.flatnonzero(buffer[start : start + _STRETCH] == ord("'")) + start
+            for start in range(0, buffer.size, _STRETCH)
+        ]
+        return np.concatenate(found) if found else np.zeros(0, dtype=np.int64)
 
     def _outside(self, position: int) -> bool:
         """Whether a place is not within a string."""
@@ -276,47 +283,65 @@ def _without(data: bytes, spans: Iterable[tuple[int, int]]) -> bytes:
 
 def _first_strings(content: bytes, names: set[str]) -> list[tuple[int, str]]:
     """Return where a bracket opens before one of these GlobalIds in quotes, and which it is."""
-    if len(content) < 26:
-        return []
-    buffer = np.frombuffer(content, dtype=np.uint8)
-    quoted = (buffer[:-24] == ord("(")) & (buffer[1:-23] == ord("'")) & (buffer[24:] == ord("'"))
-    places = np.flatnonzero(quoted)
-    # Each 22 bytes of the file, wherever they begin, as one item.
-    words: NDArray[np.bytes_] = np.ndarray(
-        (len(content) - 21,), dtype="S22", buffer=content, strides=(1,)
-    )
     wanted = {name.encode(): name for name in names if _GLOBAL_ID.fullmatch(name)}
-    found = zip(places.tolist(), words[places + 2].tolist(), strict=True)
-    return [(at, wanted[word]) for at, word in found if word in wanted]
+    found: list[tuple[int, str]] = []
+    for start in range(0, max(0, len(content) - 24), _STRETCH):
+        buffer = np.frombuffer(
+            content, np.uint8, min(_STRETCH + 24, len(content) - start), offset=start
+        )
+        quoted = buffer[:-24] == ord("(")
+        quoted &= buffer[1:-23] == ord("'")
+        quoted &= buffer[24:] == ord("'")
+        places = np.flatnonzero(quoted)
+        # Each 22 bytes, wherever they begin, as one item.
+        words: NDArray[np.bytes_] = np.ndarray(
+            (buffer.size - 21,), dtype="S22", buffer=buffer, strides=(1,)
+        )
+        both = zip((places + start).tolist(), words[places + 2].tolist(), strict=True)
+        found += [(at, wanted[word]) for at, word in both if word in wanted]
+    return found
 
 
 def _largest_after_hash(content: bytes) -> int | None:
-    """Return the largest number of at most eight digits after a #, None where one is longer.
+    """Return the largest number of at most seven digits after a #.
 
-    Strings are not left out: a number too large does no harm.  Eight bytes after each # are
-    looked at as one integer; the lowest bit set in ``other`` marks the first that is no digit.
+    None where one is longer or does not follow directly.  Strings are not left out: a number too
+    large does no harm.
     """
-    if len(content) < 16:
-        return None
-    hashes = np.flatnonzero(np.frombuffer(content, dtype=np.uint8) == ord("#"))
-    hashes = hashes[hashes < len(content) - 9]
+    largest = 0
+    for start in range(0, len(content), _STRETCH):
+        buffer = np.frombuffer(
+            content, np.uint8, min(_STRETCH + 9, len(content) - start), offset=start
+        )
+        found = _largest_in(buffer)
+        if found is None:
+            return None
+        largest = max(largest, found)
+    return largest
+
+
+def _largest_in(buffer: Bytes) -> int | None:
+    """The same for a stretch: eight bytes after each # are looked at as one integer.
+
+    The lowest bit set in ``other`` marks the first of them that is no digit.
+    """
+    hashes = np.flatnonzero(buffer == ord("#"))
+    hashes = hashes[hashes < buffer.size - 9]
     if not hashes.size:
-        return None
+        return 0
     words: NDArray[np.uint64] = np.ndarray(
-        (len(content) - 7,), dtype="<u8", buffer=content, strides=(1,)
+        (buffer.size - 7,), dtype="<u8", buffer=buffer, strides=(1,)
     )
     word = words[hashes + 1]
     digits = word ^ np.uint64(0x3030303030303030)  # a digit becomes 0 to 9
-    high = (digits + np.uint64(0x7676767676767676)) | digits
-    other = high & np.uint64(0x8080808080808080)
+    other = ((digits + np.uint64(0x7676767676767676)) | digits) & np.uint64(0x8080808080808080)
     first = other & (~other + np.uint64(1))
     if not first.all():
         return None  # eight digits or more
-    longest = int(first.max())
-    if longest == 0x80:
-        return None  # a blank after every #
-    if (first == 0x80).any() and (word[first == 0x80] & np.uint64(0xFF) <= 32).any():
+    none = first == 0x80
+    if (word[none] & np.uint64(0xFF) <= 32).any():
         return None  # a blank after some #
+    longest = int(first.max())
     count = longest.bit_length() // 8 - 1
     texts = word[first == np.uint64(longest)].byteswap()
-    return int(int(texts.max()).to_bytes(8, "big")[:count])
+    return int(int(texts.max()).to_bytes(8, "big")[:count] or b"0")

@@ -16,6 +16,7 @@ from posting_makers import BEAM, SECOND_BEAM, outcome_of, small_model, span_resu
 
 from analysis_core.errors import IfcReadError, IfcWriteError
 from analysis_core.ifc import atomic, writer
+from analysis_core.ifc.posting import Posting
 
 HERE = Path(__file__).parent
 OUTCOME = outcome_of(span_result(BEAM))
@@ -209,18 +210,34 @@ def test_a_model_that_is_not_there_is_named(tmp_path):
 
 def test_a_model_changed_by_another_program_meanwhile_is_not_overwritten(model, monkeypatch):
     theirs = small_model(name="changed meanwhile")
-    written = writer._Job.written
+    parts = Posting.parts
 
-    def slowly(self, stored, name):
-        result = written(self, stored, name)
+    def slowly(self):
+        yield from parts(self)
         model.write_bytes(theirs)
-        return result
 
-    monkeypatch.setattr(writer._Job, "written", slowly)
+    monkeypatch.setattr(Posting, "parts", slowly)
     with pytest.raises(IfcWriteError, match=r"was changed by another program .* Run again"):
         writer.post(model, model, OUTCOME)
 
     assert model.read_bytes() == theirs
+    assert os.listdir(model.parent) == ["model.ifc"]
+
+
+def test_whoever_watches_may_stop_it_and_nothing_is_left(model):
+    class Stopped(Exception):  # noqa: N818 -- as a user interface would call it
+        pass
+
+    def watch(_, done):
+        if done > 0.3:
+            raise Stopped
+
+    before = model.read_bytes()
+    with pytest.raises(Stopped):
+        writer.post(model, model, OUTCOME, progress=watch)
+
+    assert model.read_bytes() == before
+    assert os.listdir(model.parent) == ["model.ifc"]
 
 
 def test_a_long_name_is_no_obstacle(model, tmp_path):
