@@ -87,13 +87,12 @@ def combined(coefficients: Floats, factors: Floats, workspace: Workspace) -> Flo
     """Superpose (P, K, C, B) by factors (N, C): (P, K, N, B), in the order of the parts."""
     degree, segments, count, size = coefficients.shape
     out = workspace.array("combined", (degree, segments, len(factors), size))
-    out[...] = 0.0
     term = workspace.array("term", out.shape[1:])
-    for c in range(count):
-        if factors[:, c].any():
-            for p in range(degree):
-                np.multiply(factors[:, c, None], coefficients[p, :, c, None], out=term)
-                out[p] += term
+    for p in range(degree):
+        np.multiply(factors[:, 0, None], coefficients[p, :, 0, None], out=out[p])
+        for c in range(1, count):
+            np.multiply(factors[:, c, None], coefficients[p, :, c, None], out=term)
+            out[p] += term
     return out
 
 

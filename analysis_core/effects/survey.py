@@ -72,8 +72,8 @@ def _fixed(
         over, under = _margins(polynomials, len(top))
         highest, lowest = _nothing(polynomials)
     for places, values in at_places(polynomials, len(top), workspace):
-        top[places] = np.maximum.reduce(values, axis=1).swapaxes(0, 1)
-        bottom[places] = np.minimum.reduce(values, axis=1).swapaxes(0, 1)
+        np.maximum.reduce(values, axis=1, out=top[places].swapaxes(0, 1))
+        np.minimum.reduce(values, axis=1, out=bottom[places].swapaxes(0, 1))
         if curved:
             _inner(values, places, len(top), 3.0 * over, 3.0 * under, highest, lowest)
     scale = np.maximum(np.abs(top), np.abs(bottom)).max(axis=(0, 1))
