@@ -10,15 +10,16 @@ from typing import Any
 import numpy as np
 
 from analysis_core.ifc import frames, outline
-from analysis_core.ifc.body_items import NOTHING, Curved, Cut, Item, Mesh, Prism, Shape, together
+from analysis_core.ifc.body_items import NOTHING, Cut, Item, Mesh, Prism, Shape, together
 from analysis_core.ifc.curves import read_path
 from analysis_core.ifc.drawn import Drawn
 from analysis_core.ifc.face_gatherer import FaceGatherer
-from analysis_core.ifc.frames import WORLD, Frame, Vector
+from analysis_core.ifc.frames import WORLD, Frame
 from analysis_core.ifc.outline import Floats
 from analysis_core.ifc.paths import Measures, Path, Segment, in_space, sampled
 from analysis_core.ifc.placements import Placements
 from analysis_core.ifc.sections import Profile, SectionReader, profile_of
+from analysis_core.ifc.sweeps import SweepReader, Swept, disk_profile
 from analysis_core.ifc.unreadable import READ_ERRORS, UnreadableShapeError, reason_of
 
 _DEEPEST_NESTING = 40
@@ -38,6 +39,7 @@ class BodyReader:
         self._maps: dict[int, tuple[Item, ...]] = {}
         self._axis_maps: dict[int, Path | None] = {}
         self._troubles: list[str] = []
+        sweeps = SweepReader(self._profile, placements, measures)
         self._readers: dict[str, Callable[[Any, int], Iterable[Item]]] = {
             "IfcExtrudedAreaSolid": self._extrusion,
             "IfcExtrudedAreaSolidTapered": self._tapered_extrusion,
@@ -64,15 +66,15 @@ class BodyReader:
             "IfcTriangulatedFaceSet": self._tessellation,
             "IfcTriangulatedIrregularNetwork": self._tessellation,
             "IfcPolygonalFaceSet": self._tessellation,
-            "IfcRevolvedAreaSolid": self._revolution,
-            "IfcRevolvedAreaSolidTapered": self._revolution,
-            "IfcSweptDiskSolid": self._disk,
-            "IfcSweptDiskSolidPolygonal": self._disk,
-            "IfcFixedReferenceSweptAreaSolid": self._directrix,
-            "IfcDirectrixDerivedReferenceSweptAreaSolid": self._directrix,
-            "IfcSurfaceCurveSweptAreaSolid": self._directrix,
-            "IfcSectionedSpine": self._sectioned,
-            "IfcSectionedSolidHorizontal": self._sectioned,
+            "IfcRevolvedAreaSolid": _swept(sweeps.revolution),
+            "IfcRevolvedAreaSolidTapered": _swept(sweeps.revolution),
+            "IfcSweptDiskSolid": _swept(sweeps.disk),
+            "IfcSweptDiskSolidPolygonal": _swept(sweeps.disk),
+            "IfcFixedReferenceSweptAreaSolid": _swept(sweeps.directrix),
+            "IfcDirectrixDerivedReferenceSweptAreaSolid": _swept(sweeps.directrix),
+            "IfcSurfaceCurveSweptAreaSolid": _swept(sweeps.directrix),
+            "IfcSectionedSpine": _swept(sweeps.spine),
+            "IfcSectionedSolidHorizontal": _swept(sweeps.horizontal),
             "IfcBoundingBox": self._box,
         }
 
@@ -260,7 +262,7 @@ class BodyReader:
         height, radius = item[1] * self._length, item[2] * self._length
         frame = self._placements.axes(item[0])
         vector = frames.direction(frame, 0.0, 0.0, height)
-        return (Prism(_disk_profile(radius, 0.0), frame, vector),)
+        return (Prism(disk_profile(radius, 0.0), frame, vector),)
 
     def _cone(self, item: Any, depth: int) -> Iterable[Item]:
         height, radius = item[1] * self._length, item[2] * self._length
@@ -293,47 +295,6 @@ class BodyReader:
         stops = np.cumsum([0, *(len(ring) for ring in rings)]).tolist()
         loops = tuple(tuple(range(a, b)) for a, b in pairwise(stops))
         return (Mesh(np.vstack(rings), (loops,), item.is_a()),)
-
-    def _disk(self, item: Any, depth: int) -> Iterable[Item]:
-        points = in_space(sampled(read_path(item[0], self._measures)))
-        radius = item[1] * self._length
-        inner = (item[2] or 0.0) * self._length
-        profile = _disk_profile(radius, inner)
-        if not _straight(points):
-            return (Curved(points, item.is_a(), profile),)
-        return (_prism_between(points[0], points[-1], profile),)
-
-    def _revolution(self, item: Any, depth: int) -> Iterable[Item]:
-        profile = self._profile(item[0])
-        frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
-        centre = tuple(v * self._length for v in item[2][0][0])
-        axis = frames.unit(self._placements.direction(item[2][1]) if item[2][1] else (0, 0, 1))
-        angle = item[3] * self._measures.angle
-        arm = np.array([profile.moments.x, profile.moments.y, 0.0]) - np.array(centre)
-        u = np.array(axis)
-        across = np.cross(u, arm)
-        along = (arm @ u) * u
-        turns = np.linspace(0.0, angle, 17)[:, None]
-        local = np.array(centre) + along + np.cos(turns) * (arm - along) + np.sin(turns) * across
-        return (Curved(frames.images(frame, local), item.is_a(), profile),)
-
-    def _directrix(self, item: Any, depth: int) -> Iterable[Item]:
-        profile = self._profile(item[0])
-        frame = self._placements.axes(item[1]) if item[1] is not None else WORLD
-        points = frames.images(frame, in_space(sampled(read_path(item[2], self._measures))))
-        if not _straight(points):
-            return (Curved(points, item.is_a(), profile),)
-        return (_prism_between(points[0], points[-1], profile, item[0]),)
-
-    def _sectioned(self, item: Any, depth: int) -> Iterable[Item]:
-        points = in_space(sampled(read_path(item[0], self._measures)))
-        sections = [self._profile(entity) for entity in item[1]]
-        if not _straight(points):
-            return (Curved(points, item.is_a(), sections[0]),)
-        prism = _prism_between(points[0], points[-1], sections[0], item[1][0])
-        if sections[-1] is not sections[0]:
-            prism = prism._replace(end_profile=sections[-1], end_entity=item[1][-1])
-        return (prism,)
 
     def _box(self, item: Any, depth: int) -> Iterable[Item]:
         corner = [value * self._length for value in item[0][0]]
@@ -396,35 +357,5 @@ def _moved_path(path: Path, frame: Frame) -> Path:
     )
 
 
-def _straight(points: Floats) -> bool:
-    chord = points[-1] - points[0]
-    size = float(np.linalg.norm(chord))
-    if size <= 0.0:
-        return False
-    arms = points - points[0]
-    off = arms - np.outer(arms @ chord / size**2, chord)
-    return bool(np.linalg.norm(off, axis=1).max() <= 1e-3 * size)
-
-
-def _disk_profile(radius: float, inner: float) -> Profile:
-    size = 2.0 * radius
-    dimensions = {"diameter": size, "width": size, "depth": size}
-    if inner > 0.0:
-        void = outline.clockwise(outline.circle(inner))
-        dimensions["wall_thickness"] = radius - inner
-        return profile_of(
-            "", "IfcSweptDiskSolid", Drawn((outline.circle(radius), void), "tube", dimensions)
-        )
-    return profile_of(
-        "", "IfcSweptDiskSolid", Drawn((outline.circle(radius),), "circle", dimensions)
-    )
-
-
-def _prism_between(start: Floats, end: Floats, profile: Profile, entity: Any = None) -> Prism:
-    """Prism along a straight directrix; its y axis as upright as the line allows."""
-    vector: Vector = tuple((end - start).tolist())
-    z = frames.unit(vector)
-    up = (0.0, 0.0, 1.0) if abs(z[2]) < 0.999 else (0.0, 1.0, 0.0)
-    x = frames.unit(frames.cross(up, z))
-    origin: Vector = tuple(start.tolist())
-    return Prism(profile, frames.axes_frame(origin, z, x), vector, entity)
+def _swept(read: Callable[[Any], Swept]) -> Callable[[Any, int], Iterable[Item]]:
+    return lambda item, depth: read(item)

@@ -12,6 +12,7 @@ from typing import Any
 
 import numpy as np
 
+from analysis_core.ifc.alignments import along_gradient, curve_segment
 from analysis_core.ifc.conics import conic, trimmed_conic, trimmed_line
 from analysis_core.ifc.paths import (
     Measures,
@@ -75,11 +76,12 @@ def _composite(curve: Any, measures: Measures) -> Path:
     segments: list[Segment] = []
     exact = True
     for part in curve[0]:
-        if not part.is_a("IfcCompositeCurveSegment"):
-            raise UnreadableShapeError(f"a curve segment of class {part.is_a()} is not supported")
-        path = read_path(part.ParentCurve, measures)
+        if part.is_a("IfcCurveSegment"):  # of an alignment, from IFC4X3 on
+            path, forward = curve_segment(part, measures), True
+        else:
+            path, forward = read_path(part.ParentCurve, measures), bool(part.SameSense)
         exact = exact and path.exact
-        run = path.segments if part.SameSense else backwards(path).segments
+        run = path.segments if forward else backwards(path).segments
         if segments:
             gap = math.dist(segments[-1].points[-1], run[0].points[0])
             # Some writers state a sense that breaks the chain: follow the chain.
@@ -115,6 +117,18 @@ def _offset_in_plane(curve: Any, measures: Measures) -> Path:
     return straight_through([tuple(row) for row in moved.tolist()], exact=False)
 
 
+def _gradient(curve: Any, measures: Measures) -> Path:
+    """Plan and heights of an alignment put together."""
+    plan = sampled(read_path(curve.BaseCurve, measures))[:, :2]
+    segments = [s for part in curve.Segments for s in curve_segment(part, measures).segments]
+    return along_gradient(plan, sampled(Path(tuple(segments)))[:, :2])
+
+
+def _base_of_cant(curve: Any, measures: Measures) -> Path:
+    """The line of a track without its cant, which turns the section but moves no axis."""
+    return read_path(curve.BaseCurve, measures)
+
+
 def _on_surface(curve: Any, measures: Measures) -> Path:
     return read_path(curve.Curve3D, measures)
 
@@ -135,6 +149,8 @@ _READERS: dict[str, Callable[[Any, Measures], Path]] = {
     "IfcBezierCurve": spline,
     "IfcRationalBezierCurve": spline,
     "IfcOffsetCurve2D": _offset_in_plane,
+    "IfcGradientCurve": _gradient,
+    "IfcSegmentedReferenceCurve": _base_of_cant,
     "IfcSurfaceCurve": _on_surface,
     "IfcIntersectionCurve": _on_surface,
     "IfcSeamCurve": _on_surface,

@@ -188,12 +188,15 @@ class Placements:
         points = sampled(read_path(location.BasisCurve, self._measures))
         if points.shape[1] == 2:
             points = np.column_stack([points, np.zeros(len(points))])
-        steps = np.linalg.norm(np.diff(points, axis=0), axis=1)
+        steps = np.diff(points, axis=0)
+        if location.BasisCurve.is_a() in ("IfcGradientCurve", "IfcSegmentedReferenceCurve"):
+            steps = steps[:, :2]  # distances along an alignment are those in plan
+        steps = np.linalg.norm(steps, axis=1)
         along = float(location.DistanceAlong[0]) * self._length
         reached = np.concatenate([[0.0], np.cumsum(steps)])
         i = int(np.clip(np.searchsorted(reached, along, side="right") - 1, 0, len(steps) - 1))
-        tangent = (points[i + 1] - points[i]) / steps[i]
-        here = points[i] + (along - reached[i]) * tangent
+        tangent = points[i + 1] - points[i]
+        here = points[i] + (along - reached[i]) / steps[i] * tangent
         x = frames.unit(tangent.tolist())
         # The frame of the curve: x along, y to the left in plan, z up.
         left = frames.unit(frames.cross((0.0, 0.0, 1.0), x))

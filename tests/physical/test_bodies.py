@@ -473,7 +473,27 @@ def test_swept_disks_and_directrices_that_run_straight(tmp_path):
     assert ends(by_name["swept"]) == pytest.approx(np.array([[0, 2, 0], [7.0, 2, 0]]))
 
 
-def test_a_sectioned_spine_tapers(tmp_path):
+def test_the_fixed_reference_turns_the_profile(tmp_path):
+    # The reference gives the direction of the profile's x axis: 200 upright, 300 across.
+    maker = Maker()
+    swept = maker.make(
+        "IfcFixedReferenceSweptAreaSolid",
+        maker.rectangle(200.0, 300.0),
+        maker.axes((0, 0, 0)),
+        maker.line((0, 2000, 0), (7000, 2000, 0)),
+        None,
+        None,
+        maker.direction(0, 0, 1),
+    )
+    beam = maker.element("IfcBeam", "B", [swept], kind="AdvancedSweptSolid")
+
+    member = only_member(maker, tmp_path)
+
+    assert (member.section.depth, member.section.width) == pytest.approx((0.2, 0.3))
+    assert fits_library_box(maker, beam, member)
+
+
+def test_a_sectioned_spine_tapers_between_its_positions(tmp_path):
     maker = Maker("IFC2X3")
     spine = maker.make(
         "IfcSectionedSpine",
@@ -484,13 +504,79 @@ def test_a_sectioned_spine_tapers(tmp_path):
             False,
         ),
         [maker.rectangle(200.0, 300.0), maker.rectangle(200.0, 400.0)],
-        [maker.axes((0, 0, 0)), maker.axes((5000, 0, 0))],
+        [maker.axes((x, 0, 0), (1, 0, 0), (0, 1, 0)) for x in (0, 5000)],
     )  # fmt: skip
     maker.element("IfcBeam", "B", [spine], kind="SectionedSpine")
 
     member = only_member(maker, tmp_path)
 
     assert (member.section.depth, member.end_section.depth) == pytest.approx((0.3, 0.4))
+    assert member.section.width == pytest.approx(0.2)
+
+
+def alignment(maker, straight):
+    """An alignment of IFC4X3 curve segments: 20 m straight, then 15 m of arc unless straight."""
+
+    def segment(place, ref, length, parent):
+        return maker.make(
+            "IfcCurveSegment",
+            "CONTINUOUS",
+            maker.make("IfcAxis2Placement2D", maker.point(*place), maker.direction(*ref)),
+            maker.make("IfcLengthMeasure", 0.0),
+            maker.make("IfcLengthMeasure", length),
+            parent,
+        )
+
+    vector = maker.make("IfcVector", maker.direction(1, 0), 1.0)
+    line = maker.make("IfcLine", maker.point(0, 0), vector)
+    parts = [segment((0, 0), (1, 0), 20000.0, line)]
+    if not straight:
+        circle = maker.make("IfcCircle", maker.axes_2d(), 30000.0)
+        parts.append(segment((20000, 0), (1, 0), 15000.0, circle))
+    base = maker.make("IfcCompositeCurve", parts, False)
+    rise = segment((0, 1000), (1, 0.01), 35000.0, line)
+    return maker.make("IfcGradientCurve", [rise], False, base, None)
+
+
+def test_a_sectioned_solid_along_an_alignment(tmp_path):
+    # From 2 m to 14 m along, 1.5 m to the left, the profile's foot on the gradient of 1 %.
+    maker = Maker("IFC4X3")
+    curve = alignment(maker, straight=True)
+    places = [
+        maker.make(
+            "IfcAxis2PlacementLinear",
+            maker.make("IfcPointByDistanceExpression", maker.make("IfcLengthMeasure", d), 1500.0,
+                       None, None, curve),
+        )
+        for d in (2000.0, 14000.0)
+    ]  # fmt: skip
+    profile = maker.rectangle(400.0, 900.0)
+    solid = maker.make("IfcSectionedSolidHorizontal", curve, [profile, profile], places)
+    maker.element("IfcBeam", "girder", [solid], kind="AdvancedSweptSolid")
+
+    member = only_member(maker, tmp_path)
+
+    # Distances along an alignment are those in plan.
+    assert ends(member) == pytest.approx(np.array([[2, 1.5, 1.02], [14, 1.5, 1.14]]), abs=1e-6)
+    assert (member.section.width, member.section.depth) == pytest.approx((0.4, 0.9))
+
+
+def test_a_sectioned_solid_round_a_bend_is_reported_as_curved(tmp_path):
+    maker = Maker("IFC4X3")
+    curve = alignment(maker, straight=False)
+    places = [
+        maker.make(
+            "IfcAxis2PlacementLinear",
+            maker.make("IfcPointByDistanceExpression", maker.make("IfcLengthMeasure", d), None,
+                       None, None, curve),
+        )
+        for d in (2000.0, 33000.0)
+    ]  # fmt: skip
+    profile = maker.rectangle(400.0, 900.0)
+    solid = maker.make("IfcSectionedSolidHorizontal", curve, [profile, profile], places)
+    maker.element("IfcBeam", "girder", [solid], kind="AdvancedSweptSolid")
+
+    assert "curved-member" in slugs(maker.read(tmp_path))
 
 
 def test_an_advanced_brep_is_read_by_its_vertices(tmp_path):
