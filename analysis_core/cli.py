@@ -17,6 +17,7 @@ from typing import TYPE_CHECKING, Any
 
 from analysis_core import __version__, pipeline
 from analysis_core.errors import AnalysisError, JobError
+from analysis_core.output_paths import check_outputs
 from analysis_core.results import Outcome
 from analysis_core.settings import Settings
 from analysis_core.tables import (
@@ -46,6 +47,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command and return the exit status."""
     options = _parser().parse_args(arguments)
     try:
+        _check_outputs(options)
         status: int = options.run(options)
         sys.stdout.flush()
         return status
@@ -73,6 +75,20 @@ def main(arguments: Sequence[str] | None = None) -> int:
 def _failed(message: str) -> int:
     print(f"spanledger: {safe(message)}", file=sys.stderr)
     return FAILED
+
+
+def _check_outputs(options: argparse.Namespace) -> None:
+    given = vars(options)
+    inputs = {"MODEL": "model", "BEFORE": "before", "AFTER": "after", "--job": "job"}
+    outputs = {
+        "-o": "output", "--json": "json", "--csv": "csv", "--reactions": "reactions",
+        "--issues": "issues", "--job-out": "job_out",
+    }  # fmt: skip
+    check_outputs(
+        {name: given.get(key) for name, key in inputs.items()},
+        {name: given.get(key) for name, key in outputs.items()},
+        in_place=options.run is _post,
+    )
 
 
 def _parser() -> argparse.ArgumentParser:
@@ -213,6 +229,12 @@ def _rules_options(commands: Any) -> None:
     about = "list the built-in rule sets, or print one"
     command = _command(commands, "rules", _rules, about)
     command.add_argument("name", nargs="?", metavar="NAME", help="the rule set to print")
+    command.add_argument(
+        "--job", metavar="JOB.yaml", help="print the rule set of this job file, as it replaces it"
+    )
+    command.add_argument(
+        "--json", metavar="FILE", help="write the same as JSON ('-': to standard output)"
+    )
 
 
 def _survey(options: argparse.Namespace) -> int:
@@ -368,7 +390,13 @@ def _sheet(options: argparse.Namespace) -> int:
 
 
 def _rules(options: argparse.Namespace) -> int:
-    print(pipeline.rules_text(options.name))
+    name, replaced = options.name, {}
+    if options.job:
+        rules = _settings(options).rules
+        name = name or rules.name
+        replaced = dict(rules.replace) if name == rules.name else {}
+    text = pipeline.rules_text(name, replaced)
+    _put(options, lambda: pipeline.rules_document(name, replaced), text)
     return OK
 
 

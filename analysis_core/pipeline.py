@@ -9,7 +9,7 @@ from __future__ import annotations
 import difflib
 import tempfile
 from collections.abc import Callable, Iterator, Mapping, Sequence
-from dataclasses import dataclass, field, replace
+from dataclasses import asdict, dataclass, field, replace
 from datetime import datetime
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -449,13 +449,32 @@ def survey_document(
     return data
 
 
-def rules_text(name: str | None) -> str:
-    """Return the list of rule sets, or one rule set in full.  Raises JobError."""
+def rules_text(name: str | None, replaced: Mapping[str, object] | None = None) -> str:
+    """Return the list of rule sets, or one rule set in full.
+
+    ``replaced``: figures that a project puts its own in place of.  Raises JobError.
+    """
     from analysis_core import rules
 
     if name is None:
         return "\n".join(f"{key:16} {rules.load(key).title}" for key in rules.names())
-    return rules.describe(rules.load(name))
+    return rules.describe(rules.load(name, replace=replaced))
+
+
+def rules_document(
+    name: str | None, replaced: Mapping[str, object] | None = None
+) -> dict[str, Any]:
+    """Return what ``rules_text`` says as plain data, ready for JSON.  Raises JobError."""
+    from analysis_core import rules
+
+    head = {"format": "spanledger-rules", "version": 1}
+    if name is not None:
+        return {**head, "set": asdict(rules.load(name, replace=replaced))}
+    sets = [rules.load(key) for key in rules.names()]
+    return {
+        **head,
+        "sets": [{"name": r.name, "title": r.title, "edition": r.edition} for r in sets],
+    }
 
 
 def _read(source: ifc_source.Source, settings: Settings) -> Building:

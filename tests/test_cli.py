@@ -80,6 +80,58 @@ def test_rules_are_listed_and_printed(run):
     assert "gamma_Q" in printed
 
 
+def test_rules_are_data_too_with_the_figures_of_the_project(run, tmp_path):
+    job = tmp_path / "job.yaml"
+    job.write_text("rules: {set: en-1990, replace: {gamma_Q: 1.6}}", encoding="utf-8")
+
+    _, listed, _ = run("rules", "--json", "-")
+    _, plain, _ = run("rules", "en-1990", "--json", "-")
+    _, ours, _ = run("rules", "--job", job, "--json", "-")
+
+    assert "asce-7-22" in {s["name"] for s in json.loads(listed)["sets"]}
+    assert json.loads(plain)["set"]["figures"]["gamma_Q"]["value"] == 1.5  # EN 1990, A1.2(B)
+    assert json.loads(ours)["set"]["figures"]["gamma_Q"]["value"] == 1.6
+
+
+@pytest.mark.parametrize(
+    ("command", "option", "target"),
+    [
+        ("sheet", "-o", "model"),
+        ("post", "-o", "model"),
+        ("post", "-o", "link"),
+        ("balance", "--json", "model"),
+        ("balance", "--reactions", "job"),
+        ("survey", "--job-out", "job"),
+    ],
+)
+def test_no_output_goes_over_the_model_or_the_job_file(run, tmp_path, command, option, target):
+    files = {"model": tmp_path / "a.ifc", "job": tmp_path / "j.yaml", "link": tmp_path / "l.ifc"}
+    files["model"].write_bytes(MODEL.read_bytes())
+    files["job"].write_bytes(JOB.read_bytes())
+    files["link"].symlink_to(files["model"])
+
+    status, out, err = run(
+        command, files["model"], "--job", files["job"], option, files[target],
+        *(["-o", tmp_path / "s.html"] if command == "sheet" and option != "-o" else []),
+    )  # fmt: skip
+
+    assert (status, out) == (2, "")
+    assert "would be overwritten; name another file" in err
+    assert ("--in-place" in err) == (command == "post")
+    assert files["model"].read_bytes() == MODEL.read_bytes()
+    assert files["job"].read_bytes() == JOB.read_bytes()
+
+
+def test_two_outputs_cannot_share_a_file(run, tmp_path):
+    both = tmp_path / "out.html"
+
+    status, _, err = run("sheet", MODEL, "-o", both, "--json", tmp_path / "x" / ".." / "out.html")
+
+    assert status == 2
+    assert "name the same file" in err
+    assert not both.exists()
+
+
 @pytest.mark.parametrize(
     ("arguments", "message"),
     [
