@@ -84,20 +84,22 @@ def _clothoid(
     """Clothoid with heading s²/(2 A|A|) at the distance s from where its curvature is zero."""
     if constant == 0.0:
         raise UnreadableShapeError("a clothoid with the constant 0")
-    s = start + length * np.linspace(0.0, 1.0, _CHORDS + 1)
+    s = start + length * np.linspace(0.0, 1.0, 2 * _CHORDS + 1)
     heading = (s**2 - start**2) / (2.0 * constant * abs(constant))
     sense = math.copysign(1.0, length)
     return _headed(place, tangent, sense * heading, abs(length))
 
 
 def _headed(place: Coordinates, tangent: Coordinates, heading: Floats, length: float) -> Path:
-    """Path whose direction at even steps is ``heading`` from the tangent (trapezoidal rule)."""
+    """Path whose direction at even half steps is ``heading`` from the tangent (Simpson's rule)."""
     angle = heading + math.atan2(tangent[1], tangent[0])
-    step = length / (len(heading) - 1)
-    dx, dy = np.cos(angle), np.sin(angle)
-    x = place[0] + np.concatenate([[0.0], np.cumsum(0.5 * step * (dx[1:] + dx[:-1]))])
-    y = place[1] + np.concatenate([[0.0], np.cumsum(0.5 * step * (dy[1:] + dy[:-1]))])
-    return straight_through([tuple(row) for row in np.column_stack([x, y]).tolist()], exact=False)
+    step = length / ((len(heading) - 1) // 2)
+    columns = []
+    for start, rate in ((place[0], np.cos(angle)), (place[1], np.sin(angle))):
+        parts = step / 6.0 * (rate[:-2:2] + 4.0 * rate[1::2] + rate[2::2])
+        columns.append(start + np.concatenate([[0.0], np.cumsum(parts)]))
+    points = np.column_stack(columns)
+    return straight_through([tuple(row) for row in points.tolist()], exact=False)
 
 
 def _parabola(

@@ -110,12 +110,13 @@ def _arc_points(points: tuple[Coordinates, ...]) -> list[Coordinates]:
     area2 = aa * bb - ab * ab
     if area2 <= 1e-18 * aa * bb:
         return [points[2]]
-    arm = (bb * (aa - ab) * a + aa * (bb - ab) * b) / (2.0 * area2)
-    centre = start + arm
-    u = -arm
+    to_centre = (bb * (aa - ab) * a + aa * (bb - ab) * b) / (2.0 * area2)
+    centre = start + to_centre
+    u = -to_centre
     radius = float(np.linalg.norm(u))
     u = u / radius
-    w = a - (a @ u) * u
+    # Across u, from whichever point is farther off: the other may lie opposite the start.
+    w = max((arm - (arm @ u) * u for arm in (a, b)), key=lambda arm: float(arm @ arm))
     v = w / np.linalg.norm(w)
     middle_angle, end_angle = (
         math.atan2(float((p - centre) @ v), float((p - centre) @ u)) % (2.0 * math.pi)
