@@ -95,7 +95,7 @@ def update(path: str | Path, wishes: Iterable[Wish], settings: Settings) -> Upda
         if index.data_end is None:
             raise IfcReadError(f"'{name}' has no proper end; copy or export it again.")
         parts = [bytes(part) for part in editor.parts(index)]
-    return Updated(stored.packed(parts), tuple(work.changes), work.expected)
+    return Updated(list(stored.packed(parts)), tuple(work.changes), work.expected)
 
 
 class _Work:
