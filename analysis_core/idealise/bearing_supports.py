@@ -29,12 +29,16 @@ def _support(draft: Draft, chain: Chain, settings: Settings, log: Log) -> None:
         if index is None or seating.best.kind == "beam":
             continue
         joint, bearing = draft.joints[index], seating.best
-        if joint.settled:
+        if joint.settled and joint.support is None:
             continue
-        joint.vertical = RIGID
         joint.element = bearing.id
         joint.elements.extend([bearing.id, *(other.id for other in seating.others)])
         joint.width = bearing.width
+        if joint.settled:
+            # The job file says how it is held; what carries it is still what stands there.
+            joint.reason = f"{_reason(seating, 'held')} {joint.reason}"
+            continue
+        joint.vertical = RIGID
         how = "continuous by rule"
         if seating.outer:
             how = _fix_end(joint, settings)

@@ -189,14 +189,16 @@ def test_selectors(selector, members):
     assert {a.member for a in placed(found, "a")} == members
 
 
-def test_a_support_of_the_job_file_replaces_what_was_found():
+def test_a_support_of_the_job_file_says_how_what_stands_there_holds():
     setting = SupportSetting(
         Selector(name="B1"), "start", vertical=4e8, rotation=0.0, source="supports[0]"
     )
     line = only(idealise(portal_row(), Settings(supports=(setting,))))
 
     assert line.joints[2].support == Support(4e8, 0.0, 0.0)
-    assert line.joints[2].reason == "as stated in the job file (supports[0])"
+    assert line.joints[2].reason.endswith("held as stated in the job file (supports[0])")
+    # The column still carries: its reaction must not land on the beam itself.
+    assert line.joints[2].element == "C2"
 
 
 def test_a_support_along_a_member_splits_it():
