@@ -20,6 +20,7 @@ from analysis_core.settings import AreaActionSetting, Settings
 
 # CONTRACT: what arrives on beams and walls is checked against the slab to 0.1 %.
 _ALLOWED = 1e-3
+_PARALLEL = math.sin(math.radians(2.5))
 
 
 @dataclass(frozen=True, slots=True)
@@ -159,7 +160,7 @@ def _shared(
         return [], []
     region = _region(area)
     if rule == "one-way" and direction is None:
-        direction = _across_most(found)
+        direction = _across_most(found, area)
     parts = _congruent(area, [r.segment for r in found], rule, direction)
     total = math.fsum(part.total for part in parts)
     if abs(total - region.area) > _ALLOWED * region.area:
@@ -203,15 +204,30 @@ def _shares_of(
     return tuple(shares(Region(outline, voids), lines, rule, direction))
 
 
-def _across_most(found: Iterable[Receiver]) -> Spot:
-    """Return the direction across the greatest length of supporting lines."""
-    lengths: dict[int, float] = {}
+def _across_most(found: Iterable[Receiver], area: Area) -> Spot:
+    """Return the direction across the greatest length of lines along or under the area.
+
+    Lines whose directions differ by up to 2.5 degrees count as parallel; the longest of them
+    gives the direction.
+    """
+    lines = []
     for receiver in found:
         (ax, ay), (bx, by) = receiver.segment
-        angle = round(math.degrees(math.atan2(by - ay, bx - ax)) % 180.0 / 5.0) * 5 % 180
-        lengths[angle] = lengths.get(angle, 0.0) + math.hypot(bx - ax, by - ay)
-    along = math.radians(max(sorted(lengths), key=lambda a: lengths[a]))
-    return -math.sin(along), math.cos(along)
+        size = math.hypot(bx - ax, by - ay)
+        along = ((bx - ax) / size, (by - ay) / size)
+        places = [(x - ax) * along[0] + (y - ay) * along[1] for x, y in area.outline]
+        beside = min(max(places), size) - max(min(places), 0.0)
+        lines.append((along, max(beside, 0.0)))
+
+    def alike(along: Spot) -> float:
+        return math.fsum(
+            beside
+            for other, beside in lines
+            if abs(along[0] * other[1] - along[1] * other[0]) <= _PARALLEL
+        )
+
+    along, _ = max(lines, key=lambda line: (round(alike(line[0]), 3), round(line[1], 3)))
+    return -along[1], along[0]
 
 
 def _put(load: _Load, receiver: Receiver, share: Share, placer: Placer) -> None:
