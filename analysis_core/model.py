@@ -44,6 +44,10 @@ LimitState = Literal["strength", "serviceability"]
 RIGID = math.inf
 FREE = 0.0
 
+# Beyond these no structure is meant, and products in the solver would leave the range of numbers.
+_LARGEST_ACTION = 1e25  # N, N/m, N·m, 1/m, m or rad
+_LONGEST_MEMBER = 1e6  # m
+
 
 @dataclass(frozen=True, slots=True)
 class Section:
@@ -386,6 +390,11 @@ def _check_member(line: Line, member: Member) -> None:
     distance = math.hypot(b.x - a.x, b.z - a.z)
     if not distance > 0.0:
         raise ModelError(f"{where} has no length: both its joints are at x = {a.x:.3f} m.")
+    if not distance <= _LONGEST_MEMBER:
+        raise ModelError(
+            f"{where} is {distance:.3g} m long; at most {_LONGEST_MEMBER:.0e} m are permitted. "
+            f"Check its geometry and the length unit of the file."
+        )
     if abs(distance - member.length) > 1e-6 * distance:
         raise ModelError(
             f"{where} is {member.length:.6f} m long by its pieces and {distance:.6f} m between "
@@ -406,6 +415,13 @@ def _check_member(line: Line, member: Member) -> None:
 
 def _check_action(line: Line, action: Action) -> None:
     where = f"Line {line.mark}, case '{action.case}'"
+    largest = max(map(abs, _values(action)), default=0.0)
+    if not largest <= _LARGEST_ACTION:
+        raise ModelError(
+            f"{where}: an action has the value {largest:.3g} (SI); it must be a number of at most "
+            f"{_LARGEST_ACTION:.0e} ({action.source or 'no source'}). Correct it, or check the "
+            f"units of the file."
+        )
     if isinstance(action, JointForce | JointMovement):
         if not 0 <= action.joint < len(line.joints):
             raise ModelError(
@@ -425,3 +441,20 @@ def _check_action(line: Line, action: Action) -> None:
             f"{where}: an action from {low:.3f} m to {high:.3f} m lies outside member "
             f"{action.member}, which is {length:.3f} m long ({action.source or 'no source'})."
         )
+
+
+def _values(action: Action) -> tuple[float, ...]:
+    """Everything in an action that says how large it is; NaN counts as infinite."""
+    match action:
+        case DistributedForce():
+            found = (*action.transverse, *action.axial)
+        case PointForce():
+            found = (action.transverse, action.axial)
+        case PointMoment():
+            found = (action.moment,)
+        case ImposedCurvature():
+            found = (action.curvature,)
+        case JointForce() | JointMovement():
+            found = (action.horizontal, action.vertical)
+            found += (action.moment if isinstance(action, JointForce) else action.rotation,)
+    return tuple(math.inf if math.isnan(value) else value for value in found)

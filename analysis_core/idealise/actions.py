@@ -10,7 +10,7 @@ from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.log import Log, named
 from analysis_core.idealise.placing import Pair, Placer, between
 from analysis_core.idealise.sharing import shared
-from analysis_core.idealise.vectors import Vector, distance, dot, length, subtract, unit
+from analysis_core.idealise.vectors import UP, Vector, distance, dot, length, subtract, unit
 from analysis_core.model import FREE, JointMovement
 
 # A component is worth a finding from this fraction of its action's size.
@@ -206,8 +206,12 @@ def _put_node_movement(
     if not any(action.displacement) and not any(action.rotation):
         return
     applied = False
+    held: dict[str, list[Vector]] = {"right": [], "down": [], "turn": []}
     for draft, index in places:
         joint, plane = draft.joints[index], draft.plane
+        held["right"] += [plane.axis] if joint.horizontal > FREE else []
+        held["down"] += [UP] if joint.vertical > FREE else []
+        held["turn"] += [plane.clockwise] if joint.rotation > FREE else []
         right = dot(action.displacement, plane.axis) if joint.horizontal > FREE else 0.0
         down = -action.displacement[2] if joint.vertical > FREE else 0.0
         turn = dot(action.rotation, plane.clockwise) if joint.rotation > FREE else 0.0
@@ -227,6 +231,38 @@ def _put_node_movement(
             (action.global_id, action.connection),
             places[0][0].mark,
         )
+    elif lost := _lost_movement(action, held):
+        log.add(
+            "warning",
+            "movement-without-support",
+            f"Action '{action.name}' (GlobalId {action.global_id}) moves connection "
+            f"{action.connection} also by {' and '.join(lost)} in directions in which it is not "
+            f"held within {_marks(draft for draft, _ in places)}; that part has no effect.",
+            (action.global_id, action.connection),
+            places[0][0].mark,
+        )
+
+
+def _lost_movement(action: NodeAction, held: Mapping[str, list[Vector]]) -> list[str]:
+    """What of a movement no support takes part in, in words."""
+    moved, turned = action.displacement, action.rotation
+    level = length(_rest(moved, held["right"]))
+    upright = 0.0 if held["down"] else abs(moved[2])
+    rest = _rest(turned, held["turn"])
+    turn = length((rest[0], rest[1], turned[2]))
+    lost = []
+    for value, size, text in (
+        (level, length(moved), f"{level * 1e3:.3g} mm sideways"),
+        (upright, length(moved), f"{upright * 1e3:.3g} mm vertically"),
+        (turn, length(turned), f"{turn:.3g} rad"),
+    ):
+        if value > _NEGLIGIBLE * size:
+            lost.append(text)
+    return lost
+
+
+def _rest(vector: Vector, axes: list[Vector]) -> Vector:
+    return shared(vector, axes)[1] if axes else (vector[0], vector[1], 0.0)
 
 
 def _projected(force: Vector, drafts: list[Draft]) -> _Projection:

@@ -63,6 +63,8 @@ def let_carry(scheme: Scheme, building: Building, table: PropertyTable, log: Log
     for contact in contacts:
         if contact.carrier is not None:
             _rest(scheme, contact, drafts, log)
+        else:
+            _report_uncoupled(contact, drafts, log)
     _report_outside(scheme, at_node, log)
 
 
@@ -121,6 +123,19 @@ def _rest(scheme: Scheme, contact: Contact, drafts: dict[str, Draft], log: Log) 
                 (contact.key, *carried.elements, *carrier.elements),
                 carried.mark,
             )
+
+
+def _report_uncoupled(contact: Contact, drafts: dict[str, Draft], log: Log) -> None:
+    marks = [touch.body for touch in contact.touches]
+    log.add(
+        "warning",
+        "grillage-crossing",
+        f"Lines {listed(marks)} meet at their free ends at connection {contact.key}, where in "
+        f"truth they hold each other up. Each is analysed by itself. State a support there in the "
+        f"job file (supports: on, end) if one carries the other.",
+        (contact.key, *(element for mark in marks for element in drafts[mark].elements)),
+        marks[0],
+    )
 
 
 def _passes(contact: Contact, mark: str) -> bool:

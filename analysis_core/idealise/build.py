@@ -78,6 +78,24 @@ def build(
         )
     except ModelError as error:
         log.add("error", "line-not-built", str(error), draft.elements, draft.mark)
+        return None if not actions else _without_actions(draft, members, str(error))
+
+
+def _without_actions(draft: Draft, members: list[Member], fault: str) -> Line | None:
+    """The line as it can be listed and drawn where only its actions do not fit."""
+    try:
+        return Line(
+            mark=draft.mark,
+            joints=tuple(_joint(draft, number) for number in range(len(draft.joints))),
+            members=tuple(members),
+            kind=draft.kind,
+            storey=draft.storey,
+            elements=draft.elements,
+            origin=draft.plane.origin,
+            axis=draft.plane.axis,
+            fault=fault,
+        )
+    except ModelError:
         return None
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
@@ -96,6 +97,8 @@ def network_of(building: Building, tolerances: Tolerances, log: Log) -> Network:
             continue
         own = attachments.get(member.global_id, [])
         limb = _limb(member, size, own, log)
+        if _report_coinciding(limb, connections, log):
+            continue
         _enter_nodes(network, limb, connections)
         network.add(limb)
         _report_gaps(limb, connections, tolerances, log)
@@ -133,6 +136,27 @@ def _enter_nodes(network: Network, limb: Limb, connections: Mapping[str, Connect
         connection = connections.get(grip.node) if grip.attachment else None
         point = connection.point if connection else limb.point_at(grip.position)
         network.nodes.setdefault(grip.node, Node(grip.node, point, connection))
+
+
+def _report_coinciding(limb: Limb, connections: Mapping[str, Connection], log: Log) -> bool:
+    """Whether places along a member are attached to connections that lie at one point."""
+    for near, far in itertools.pairwise(limb.grips):
+        here, there = (
+            connections[grip.node].point if grip.attachment else limb.point_at(grip.position)
+            for grip in (near, far)
+        )
+        if distance(here, there) > _SAME_PLACE:
+            continue
+        log.add(
+            "error",
+            "member-without-length",
+            f"Member {named(limb.member)} is attached {far.position - near.position:.3f} m apart "
+            f"to {near.node} and {far.node}, which lie at one point; it cannot be analysed. Check "
+            f"the geometry of the member and of the connections.",
+            (limb.member.global_id, *(g.node for g in (near, far) if g.attachment)),
+        )
+        return True
+    return False
 
 
 def _report_gaps(

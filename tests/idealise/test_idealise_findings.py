@@ -23,7 +23,7 @@ from building_makers import (
 )
 from physical_makers import beam, column, house
 
-from analysis_core.building import Attachment, LoadCase, TemperatureAction
+from analysis_core.building import FIXED, Attachment, LoadCase, NodeAction, TemperatureAction
 from analysis_core.idealise import idealise
 from analysis_core.settings import (
     ActionSetting,
@@ -208,3 +208,46 @@ def test_a_line_of_beams_side_by_side_is_still_analysed():
     line = only(idealise(simple(members=twins), Settings()))
 
     assert (line.kind, len(line.members), line.fault) == ("frame", 2, "")
+
+
+def test_a_member_between_two_connections_at_one_point_is_refused():
+    nodes = [node("a", FREE3, PINNED), node("b", FREE3, PINNED)]
+    building = replace(
+        model([member("B", FREE3, END)], nodes),
+        attachments=(Attachment("B", "a", 0.0), Attachment("B", "b", 6.0)),
+    )
+
+    assert (
+        "6.000 m apart to a and b, which lie at one point"
+        in told(building, "member-without-length").message
+    )
+
+
+def test_a_support_moved_sideways_as_well_is_said():
+    moved = NodeAction("s", "s", "S", "a", displacement=(0.0, 0.012, -0.005))
+    found = idealise(simple(actions=[moved]), Settings())
+
+    assert "12 mm sideways" in finding(found, "movement-without-support").message
+    assert only(found).actions[0].vertical == 0.005
+
+
+def test_a_support_turned_about_an_axis_that_is_free_is_said():
+    moved = NodeAction("s", "s", "S", "a", displacement=(0.0, 0.0, -0.005), rotation=(0, 0.02, 0))
+
+    assert "0.02 rad" in told(simple(actions=[moved]), "movement-without-support").message
+
+
+def test_cantilevers_that_meet_at_their_tips_are_said_to_share_what_acts_there():
+    corner, far = (3.0, 0.0, 0.0), (3.0, 4.0, 0.0)
+    nodes = [node("a", FREE3, FIXED), node("b", corner), node("c", far, FIXED)]
+    building = model([member("A", FREE3, corner), member("B", corner, far)], nodes)
+
+    assert "hold each other up" in told(building, "grillage-crossing").message
+
+
+@pytest.mark.parametrize("value", [1e308, -3e40, math.inf, math.nan])
+def test_an_action_beyond_all_measure_is_refused_and_the_line_still_listed(value):
+    found = idealise(simple(actions=[uniform("q", "B", (0.0, 0.0, value), 6.0)]), Settings())
+
+    assert finding(found, "line-not-built").severity == "error"
+    assert "check the units" in only(found).fault
