@@ -11,6 +11,7 @@ import math
 import re
 from typing import Any
 
+from analysis_core.ifc.source import Source
 from analysis_core.ifc.unreadable import text_of
 
 _END = re.compile(r"^(start|begin|iend|jend|end)")
@@ -19,15 +20,20 @@ _BENDING = re.compile(r"(my|ryy?|rotationy|bendingy|momenty|bendingmoment|majora
 _PINNED = {"pinned", "pin", "hinged", "hinge", "released", "bendingmoment", "simple"}
 _FIXED = {"fixed", "rigid", "fullyfixed", "fullfixity", "continuous", "encastre"}
 
+_WORDS = (b"elease", b"ELEASE", b"ixity", b"IXITY", b"ixing", b"IXING")
+
 Ends = tuple[float | None, float | None]
 NOT_STATED: Ends = (None, None)
 
 
-def end_releases(file: Any) -> dict[int, Ends]:
+def end_releases(source: Source) -> dict[int, Ends]:
     """Return rotational stiffness at start and end by entity number of the element.
 
     0 where released, infinite where fixed, None where not stated.
     """
+    file = source.file
+    if not _may_state(source):
+        return {}
     properties = {}
     for item in file.by_type("IfcPropertySingleValue"):
         name = text_of(item.get_argument(0))
@@ -49,6 +55,17 @@ def end_releases(file: Any) -> dict[int, Ends]:
                     ends[1] if end is None else end,
                 )
     return found
+
+
+def _may_state(source: Source) -> bool:
+    """Whether the words occur in the file at all: hardly any does, and properties are many."""
+    if not source.as_is:
+        return True
+    try:
+        text = source.path.read_bytes()
+    except OSError:
+        return True
+    return any(word in text for word in _WORDS)
 
 
 def _sets(file: Any, properties: dict[int, tuple[int, float]]) -> dict[int, Ends]:

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import gc
 import math
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterable, Iterator
 from contextlib import contextmanager
+from typing import Any
 
 import numpy as np
 
@@ -77,7 +78,7 @@ class _Reader:
         self._bearing = CarrierReader(self._elements, self._laying, self._notes)
         self._roles = RoleJudge(settings.beams)
         self._steepest = math.sin(settings.tolerances.beam_slope)
-        self._ends = end_releases(source.file)
+        self._ends = end_releases(source)
         self._members: list[AxisMember] = []
         self._counts: dict[str, int] = {}
         self._ids: set[str] = set()
@@ -85,22 +86,18 @@ class _Reader:
 
     def building(self) -> Building:
         storeys = self._elements.storeys()
-        included = self._settings.analysis.include
-        self._beam_ids = {
-            entity.id()
-            for ifc_class in included
-            for entity in self._elements.of_class(ifc_class) or ()
-        }
         done: set[int] = set()
-        for ifc_class in included:
-            self._read_all(ifc_class, self._read_beam, done)
+        beams = {name: self._entities(name) for name in self._settings.analysis.include}
+        self._beam_ids = {entity.id() for entities in beams.values() for entity in entities}
+        for entities in beams.values():
+            self._read_all(entities, self._read_beam, done)
         for ifc_class in COLUMN_CLASSES:
-            self._read_all(ifc_class, self._read_column, done)
+            self._read_all(self._entities(ifc_class), self._read_column, done)
         for ifc_class in OTHER_CARRIER_CLASSES:
-            self._read_all(ifc_class, self._read_carrier, done)
-        self._read_all("IfcSlab", self._bearing.add_slab, done)
+            self._read_all(self._entities(ifc_class), self._read_carrier, done)
+        self._read_all(self._entities("IfcSlab"), self._bearing.add_slab, done)
         if self._settings.area_actions:
-            self._read_all("IfcSpace", self._bearing.add_space, done)
+            self._read_all(self._entities("IfcSpace"), self._bearing.add_space, done)
         note_duplicates(self._members, self._notes)
         self._count("taken as beams", len(self._members))
         self._elements.note_materials()
@@ -120,13 +117,16 @@ class _Reader:
     def _count(self, what: str, number: int = 1) -> None:
         self._counts[what] = self._counts.get(what, 0) + number
 
-    def _read_all(self, ifc_class: str, reader: Callable[[Record], None], done: set[int]) -> None:
+    def _entities(self, ifc_class: str) -> tuple[Any, ...]:
         found = self._elements.of_class(ifc_class)
-        if found is None:
-            if ifc_class not in _KNOWN_ELSEWHERE:
-                self._notes.unknown_class(ifc_class, self._source.schema)
-            return
-        for entity in found:
+        if found is None and ifc_class not in _KNOWN_ELSEWHERE:
+            self._notes.unknown_class(ifc_class, self._source.schema)
+        return found or ()
+
+    def _read_all(
+        self, entities: Iterable[Any], reader: Callable[[Record], None], done: set[int]
+    ) -> None:
+        for entity in entities:
             record = Record.of(entity)
             if record.id in done:
                 continue
