@@ -40,6 +40,12 @@ class Moments:
     yy: float
     xy: float
 
+    @property
+    def principal(self) -> tuple[float, float]:
+        """The larger and the smaller second moment about the principal axes."""
+        spread = math.hypot(0.5 * (self.yy - self.xx), self.xy)
+        return 0.5 * (self.yy + self.xx) + spread, 0.5 * (self.yy + self.xx) - spread
+
     def transformed(self, matrix: Matrix) -> Moments:
         """Return the moments of the outline after ``(x, y)`` became ``matrix @ (x, y)``."""
         (a, b), (c, d) = matrix

@@ -94,6 +94,7 @@ class Stated:
         for name in ("section_modulus_top", "section_modulus_bottom", "plastic_modulus"):
             if name in dimensions:
                 dimensions[name] *= ratio
+        dimensions["inertia_major"], dimensions["inertia_minor"] = stated.principal
         warping = self.value("warping", dimensions.get("warping"))
         if warping:
             dimensions["warping"] = warping

@@ -9,6 +9,7 @@ What ``Section.dimensions`` holds (m, m², m³, m⁶), by name: the profile's ow
 
 * "section_modulus_top", "section_modulus_bottom": elastic, for the outermost fibres;
 * "section_modulus_lateral", "plastic_modulus" (where the outline is known);
+* "inertia_major", "inertia_minor": about the principal axes;
 * "warping" for I-sections and channels;
 * "roll": angle in rad from the section's z to the shape's own depth axis, where not zero.
 """
@@ -29,6 +30,7 @@ from analysis_core.ifc.outline import IDENTITY, Floats, Loops, Matrix, Moments
 from analysis_core.ifc.paths import Measures
 from analysis_core.ifc.profile_properties import Stated, stated_for
 from analysis_core.ifc.profiles import ProfileDrawer
+from analysis_core.ifc.recognise import recognise
 from analysis_core.ifc.unreadable import READ_ERRORS, reason_of, text_of
 from analysis_core.model import Section
 
@@ -191,6 +193,7 @@ def section_of(profile: Profile, matrix: Matrix = IDENTITY) -> Section:
     dimensions["section_modulus_bottom"] = moments.yy / (moments.y - bottom)
     dimensions["section_modulus_lateral"] = moments.xx / max(right - moments.x, moments.x - left)
     dimensions["plastic_modulus"] = slices.plastic_modulus(loops, strips)
+    dimensions["inertia_major"], dimensions["inertia_minor"] = moments.principal
     if profile.warping:
         dimensions["warping"] = profile.warping * scale**6
     roll = _roll(drawn.roll, matrix)
@@ -275,6 +278,11 @@ def _torsion_constant(drawn: Drawn, moments: Moments) -> float:
         return torsion.thin_open(flat, math.sqrt(d["web_thickness"] * d["flange_thickness"]))
     if drawn.shape in ("lipped channel", "thin-walled"):
         return torsion.thin_open(moments.area / d["thickness"], d["thickness"])
+    if drawn.shape == "composite":
+        # Parts side by side resist twisting each for itself.
+        parts = [recognise((rows,)) for rows in drawn.loops if outline.signed_area(rows) > 0.0]
+        if len(parts) == len(drawn.loops):
+            return sum(_torsion_constant(part, outline.moments(part.loops)) for part in parts)
     if drawn.shape == "hollow polygon" and len(drawn.loops) == 2:
         return _tube_torsion(drawn.loops, moments.area)
     return torsion.solid(moments.area, moments.xx + moments.yy)

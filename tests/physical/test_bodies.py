@@ -376,6 +376,9 @@ def test_a_plate_girder_of_three_extrusions_is_one_section(tmp_path):
     assert ends(member) == pytest.approx(np.array([[0, 0, 0], [6.0, 0, 0]]), abs=1e-9)
     assert fits_library_box(maker, beam, member)
     assert "3 parts that run side by side" in building.findings[0].message
+    # Twisted, each plate resists for itself: about (2 b tf³ + h tw³)/3 (thin-walled, open).
+    thin = (2.0 * 200.0 * 20.0**3 + 360.0 * 10.0**3) / 3.0 * 1e-12
+    assert member.section.torsion == pytest.approx(thin, rel=0.07)
 
 
 def test_a_plate_girder_of_three_bodies_with_faces_is_one_section(tmp_path):
