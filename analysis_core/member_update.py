@@ -43,17 +43,20 @@ def wishes(
     densities = {m.global_id: m.material.density for m in building.members if m.material}
     found = []
     for chosen, kind in ((sections, "profile"), (materials, "material")):
-        seen: dict[str, str] = {}
+        wanted: dict[str, str] = {}
         for target, name in chosen.items():
-            elements = _elements(target, model)
-            for element in elements:
-                if seen.setdefault(element, name) != name:
-                    what = "section" if kind == "profile" else kind
+            for element in _elements(target, model):
+                if wanted.setdefault(element, name) != name:
+                    what = "sections" if kind == "profile" else "materials"
                     raise JobError(
-                        f"{model.names.get(element) or element} is given two of each {what}: "
-                        f"'{seen[element]}' and '{name}'. Give it one."
+                        f"{model.names.get(element) or element} is given two {what}, "
+                        f"'{wanted[element]}' and '{name}'. Give it one."
                     )
-            found.append(Wish(elements, areas=areas, densities=densities, **{kind: name}))
+        # Together, so that a type is changed itself where all its occurrences are.
+        for name in dict.fromkeys(wanted.values()):
+            elements = tuple(e for e, n in wanted.items() if n == name)
+            given = {kind: name}
+            found.append(Wish(elements, areas=areas, densities=densities, **given))
     return found
 
 

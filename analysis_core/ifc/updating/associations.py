@@ -32,7 +32,12 @@ def associate(
 
     def changed(select: Any) -> Any:
         if select.id() not in made:
-            made[select.id()] = _changed(editor, select, profile, material)
+            own = all(
+                u.is_a("IfcRelAssociatesMaterial")
+                and {o.id() for o in u.RelatedObjects or ()} <= numbers
+                for u in editor.users(select)
+            )
+            made[select.id()] = _changed(editor, select, profile, material, own=own)
         return made[select.id()]
 
     for relation in editor.file.by_type("IfcRelAssociatesMaterial"):
@@ -41,16 +46,19 @@ def associate(
         if not mine or select is None:
             continue
         done |= {o.id(): "" for o in mine}
+        old = _told(choose(select), profile)
         if (other := changed(select)) is not None:
-            editor.move(relation, f"{mine[0][0]}/{name}", mine, RelatingMaterial=other)
-            done |= {o.id(): _told(choose(select), profile) for o in mine}
+            if other != select:
+                editor.move(relation, f"{mine[0][0]}/{name}", mine, RelatingMaterial=other)
+            done |= {o.id(): old for o in mine}
     for each in objects:
         select = inherited.get(each.id())
         if each.id() in done or select is None or each.is_a("IfcTypeObject"):
             continue
+        old = _told(choose(select), profile)
         if (other := changed(select)) is not None:
             _relate(editor, each, name, other)
-            done[each.id()] = _told(choose(select), profile)
+            done[each.id()] = old
     return {number: text for number, text in done.items() if text}
 
 
@@ -106,8 +114,11 @@ def _relate(editor: Editor, element: Any, name: str, select: Any) -> None:
     )  # fmt: skip
 
 
-def _changed(editor: Editor, select: Any, profile: Any, material: Any) -> Any:
-    """The association with the profile or material exchanged; None where it holds none."""
+def _changed(editor: Editor, select: Any, profile: Any, material: Any, *, own: bool) -> Any:
+    """The association with the profile or material exchanged; None where it holds none.
+
+    A usage that no others have (``own``) is changed itself: it may not be left without users.
+    """
     old = choose(select)
     swaps: dict[int, Any] = {}
     names: dict[str, str] = {}
@@ -121,6 +132,12 @@ def _changed(editor: Editor, select: Any, profile: Any, material: Any) -> Any:
             return None
         swaps[old.material.id()] = material
         names |= _renamed(old.material.Name, material.Name)
+    if own and select.is_a().startswith("IfcMaterial") and "Usage" in select.is_a():
+        for attribute in ("ForProfileSet", "ForProfileEndSet", "ForLayerSet"):
+            part = getattr(select, attribute, None)
+            if part is not None and (other := _rebuilt(editor, part, swaps, names, 0)) is not None:
+                editor.set(select, attribute, other)
+        return select
     return _rebuilt(editor, select, swaps, names, 0)
 
 

@@ -151,7 +151,7 @@ class Statements:
         elif isinstance(plain, bool) or not isinstance(plain, int | float):
             return item, None
         else:
-            found = self._number(item, float(plain), value if typed else None)
+            found = self._number(item, float(plain))
             if found is None:
                 return item, None
             if math.isnan(found):
@@ -164,7 +164,7 @@ class Statements:
         self._editor.set(item, place, wrapped)
         return item, told
 
-    def _number(self, item: Any, number: float, measure: Any) -> float | None:
+    def _number(self, item: Any, number: float) -> float | None:
         """The new number; not a number where it is outdated, None where it is no such value."""
         if self._sections is None or not number:
             return None
@@ -173,16 +173,16 @@ class Statements:
         if name in _NAMES:
             ours, power = _NAMES[name]
             before, after = _value(old, ours), _value(new, ours)
-            if before and self._states(item, number, measure, before, power):
+            if before and self._states(item, number, before, power):
                 return _scaled(number, after / before) if after else math.nan
             return None
         if any(word in name for word in _WITH_AREA):
-            return self._with_area(item, number, measure, name)
+            return self._with_area(item, number, name)
         if any(word in name for word in _OUTDATED):
             return math.nan
         return None
 
-    def _with_area(self, item: Any, number: float, measure: Any, name: str) -> float:
+    def _with_area(self, item: Any, number: float, name: str) -> float:
         """Volume and weight go with the area, where they are those of the whole section."""
         assert self._sections is not None  # the caller has seen to it
         old, new = self._sections
@@ -193,33 +193,30 @@ class Statements:
             self._density * (old.area if per_length else volume),
         )
         power = 3 if "volume" in name else 0
-        if expected and self._states(item, number, measure, expected, power):
+        if expected and self._states(item, number, expected, power):
             return _scaled(number, new.area / old.area)
         return math.nan
 
-    def _states(self, item: Any, number: float, measure: Any, si: float, power: int) -> bool:
+    def _states(self, item: Any, number: float, si: float, power: int) -> bool:
         """Whether a number states an SI value, in its own unit or one that files take for it."""
         return any(
-            abs(number * factor - si) <= _AGREEMENT * si
-            for factor in self._factors(item, measure, power)
+            abs(number * factor - si) <= _AGREEMENT * si for factor in self._factors(item, power)
         )
 
-    def _factors(self, item: Any, measure: Any, power: int) -> Iterator[float]:
+    def _factors(self, item: Any, power: int) -> Iterator[float]:
         units = self._editor.units
         unit = getattr(item, "Unit", None)
         try:
             if unit is not None:
                 yield units.of_entity(unit)
                 return
-            if measure is not None and measure.is_a() in ("IfcMassMeasure",):
-                yield units.of_measure(measure.is_a())
         except (UnitError, AttributeError):
             return
         if power:
             yield from (units.to_si(_KINDS[power]), units.length**power, 1.0, 0.01**power)
             yield 0.001**power
         else:
-            yield from (1.0, 1e3, 0.45359237, 9.80665)
+            yield from (units.to_si("MASSUNIT"), 1.0)
 
 
 def _value(section: Section, name: str) -> float:
