@@ -3,20 +3,17 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
+from analysis_core.check_inputs import designs, line_fields, timber_fields, timber_sags
 from analysis_core.checks import concrete_aci, concrete_en, steel_aisc, steel_en, timber_en
-from analysis_core.checks.design import EffectField, Governing, MemberDesign, Restraints
-from analysis_core.checks.working import Check, Figure, Figures, not_checked
-from analysis_core.effects.states import state_stations
+from analysis_core.checks.design import MemberDesign
+from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 from analysis_core.errors import JobError
 from analysis_core.line_details import detail_of
-from analysis_core.line_selection import chooses
-from analysis_core.model import Line, LineModel, Member
-from analysis_core.results import LineResult, MemberEnvelope, Outcome
-from analysis_core.settings import RestraintSetting, Settings
-
-_COUNT = 41
+from analysis_core.model import LineModel, Member
+from analysis_core.results import LineResult, Outcome
+from analysis_core.settings import Settings
 
 FIGURES: Mapping[str, Mapping[str, Figure]] = {
     "en-1993-1-1": steel_en.FIGURES,
@@ -25,15 +22,14 @@ FIGURES: Mapping[str, Mapping[str, Figure]] = {
     "aci-318-19": concrete_aci.FIGURES,
     "en-1995-1-1": timber_en.FIGURES,
 }
+_TIMBER = "en-1995-1-1"
+_DEFLECTION_NOT_COVERED = (
+    "Elastic, from the rigidities as modelled; cracking and creep are not covered here."
+)
 _BY_RULES = {
     "asce": {"steel": "aisc-360", "concrete": "aci-318-19", "timber": "none"},
     "": {"steel": "en-1993-1-1", "concrete": "en-1992-1-1", "timber": "en-1995-1-1"},
 }
-# Load duration by the nature of a case, EN 1995-1-1 table 2.2 (from memory; nationally determined).
-_DURATION = {
-    "permanent": "permanent", "imposed": "medium", "snow": "short", "wind": "short",
-    "settlement": "permanent", "temperature": "medium", "other": "medium",
-}  # fmt: skip
 
 
 @dataclass(frozen=True, slots=True)
@@ -64,146 +60,122 @@ def check_lines(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberC
 
 def check_line(result: LineResult, model: LineModel, settings: Settings) -> list[MemberChecks]:
     """Return the checks of the members of one line."""
-    envelope = result.envelopes.get("strength")
-    if envelope is None or result.parts is None or result.detail is None:
+    if "strength" not in result.envelopes or result.parts is None or result.detail is None:
         return []
-    states = detail_of(result).states
-    at = state_stations(result.parts, states, _COUNT)
-    durations = _durations(model, settings)
+    codes = [_code(member, result, settings) for member in result.line.members]
+    plain = line_fields(result)
+    timber = timber_fields(result, model, settings) if _TIMBER in codes else plain
+    sags = timber_sags(result, _creep(settings)) if _TIMBER in codes else None
+    factored = _factored(result)
+    prepared = {
+        fields is timber: designs(result, fields, model, settings) for fields in (plain, timber)
+    }
     out = []
-    for member, found in zip(result.line.members, envelope.members, strict=True):
-        fields = tuple(
-            EffectField(name, at.x[member.id], at.moment[r, member.id], at.shear[r, member.id])
-            for r, name in enumerate(at.names)
-        )
-        held = restraints(result.line, member, model, settings)
-        out.append(_checked(member, found, fields, held, result.line, settings, durations))
+    for member, code in zip(result.line.members, codes, strict=True):
+        design = prepared[code == _TIMBER or timber is plain][member.id]
+        if design is not None and code == _TIMBER:
+            design = replace(design, sags=None if sags is None else sags.get(member.id, ()))
+        checks = _checks(member, design, code, settings, timber.durations, factored)
+        held = design.restraints.reason if design is not None else ""
+        checks = (*checks, *_deflections(result, member))
+        out.append(MemberChecks(member.id, code if code in FIGURES else "", held, checks))
     return out
 
 
-def _checked(
-    member: Member,
-    envelope: MemberEnvelope,
-    fields: tuple[EffectField, ...],
-    held: Restraints,
-    line: Line,
-    settings: Settings,
-    durations: Mapping[str, str],
-) -> MemberChecks:
-    section, material = member.section, member.material
-    if section is None or material is None:
-        reason = "The member has no section or no material; its rigidity was stated."
-        return MemberChecks(member.id, "", held.reason, (not_checked("resistance", reason),))
-    code = _code(material.category, settings)
-    if code not in FIGURES:
-        what = f"'{material.category}'" if material.category else "a kind that is not known"
-        reason = f"Material '{material.name}' is of {what}; no check covers it here."
-        return MemberChecks(member.id, code, held.reason, (not_checked("resistance", reason),))
-    if member.end_section is not None or not member.prismatic:
-        reason = "The section varies along the member; that is outside the checks."
-        return MemberChecks(member.id, code, held.reason, (not_checked("resistance", reason),))
-    shear = max(envelope.shear_max, envelope.shear_min, key=lambda e: abs(e.value))
-    design = MemberDesign(
-        member.id, section, material, member.length, fields,
-        Governing(envelope.sagging, envelope.hogging, shear), held, _cantilever(line, member),
-    )  # fmt: skip
+def _checks(
+    member: Member, design: MemberDesign | None, code: str, settings: Settings,
+    durations: Mapping[str, str], factored: bool,
+) -> tuple[Check, ...]:  # fmt: skip
+    reason = _outside(member, code, factored)
+    if reason or design is None:
+        return (not_checked("resistance", reason),)
     known = FIGURES[code]
-    replaced = {k: v for k, v in settings.checks.replace.items() if k in known}
-    figures = Figures(known, replaced)
-    allowable = settings.rules.name.endswith("-asd")
-    glulam = material.name.lower().startswith(("gl", "glulam")) or "glu" in material.source.lower()
+    figures = Figures(known, {k: v for k, v in settings.checks.replace.items() if k in known})
+    kind = design.material.category
     run: dict[str, Callable[[], Sequence[Check]]] = {
         "en-1993-1-1": lambda: steel_en.check_steel(design, figures),
-        "aisc-360": lambda: steel_aisc.check_steel(design, figures, allowable=allowable),
+        "aisc-360": lambda: steel_aisc.check_steel(design, figures, allowable=not factored),
         "en-1992-1-1": lambda: concrete_en.check_concrete(design, figures),
         "aci-318-19": lambda: concrete_aci.check_concrete(design, figures),
-        "en-1995-1-1": lambda: timber_en.check_timber(design, figures, durations, glulam),
+        "en-1995-1-1": lambda: timber_en.check_timber(design, figures, durations, kind),
     }
-    return MemberChecks(member.id, code, held.reason, tuple(run[code]()))
+    return tuple(run[code]())
 
 
-def restraints(line: Line, member: Member, model: LineModel, settings: Settings) -> Restraints:
-    """Return where the flanges of a member are held sideways, with the reason.
-
-    Both flanges at the ends (taken as forked bearings, common practice), the top flange where
-    another line bears on this one or a slab lies on it, and what the job file states.
-    """
-    length = member.length
-    ends = {0.0, length}
-    reasons = ["both flanges at the ends of the member"]
-    top = set(ends)
-    for transfer in model.transfers:
-        if transfer.to_line == line.mark and transfer.member == member.id:
-            top.add(transfer.position)
-            reasons.append(
-                f"top flange at {transfer.position:.2f} m, where {transfer.from_line} bears"
-            )
-    bottom = set(ends)
-    slab = model.held_by.get(member.element, "")
-    top_all, bottom_all = bool(slab), False
-    if slab:
-        reasons.append(f"top flange all along by slab {slab}")
-    for setting in settings.checks.restraints:
-        if not chooses(setting.on, line, member, model):
-            continue
-        places = _places(setting, member)
-        if setting.flange in ("top", "both"):
-            top |= places
-            top_all |= setting.continuous
-        if setting.flange in ("bottom", "both"):
-            bottom |= places
-            bottom_all |= setting.continuous
-        reasons.append(f"{setting.flange} flange as stated in the job file")
-    return Restraints(
-        tuple(sorted(top)), tuple(sorted(bottom)), top_all, bottom_all, "; ".join(reasons)
+def _outside(member: Member, code: str, factored: bool) -> str:
+    """Why a member is not checked at all; "" where it is."""
+    section, material = member.section, member.material
+    if section is None or material is None:
+        return "The member has no section or no material; its rigidity was stated."
+    if code not in FIGURES:
+        what = f"'{material.category}'" if material.category else "a kind that is not known"
+        return f"Material '{material.name}' is of {what}; no check covers it under these rules."
+    if not factored and code != "aisc-360":
+        return (
+            f"No strength combination has a factor above 1, so actions are not factored; {code} "
+            f"needs factored ones. Choose a rule set for strength design."
+        )
+    bends = member.flexural_rigidity
+    steady = all(
+        not any(piece.flexural[1:]) and abs(piece.flexural_at(0.0) - bends) <= 1e-6 * bends
+        for piece in member.pieces
     )
+    if member.end_section is not None or not steady:
+        return "The section varies along the member; that is outside the checks."
+    if abs(bends - material.elastic_modulus * section.inertia) > 0.02 * bends:
+        return (
+            f"The member does not bend about the strong axis of {section.name} (or its rigidity "
+            f"was stated); that is outside the checks."
+        )
+    return ""
 
 
-def _goes_on(line: Line, member: Member, joint: int) -> bool:
-    return any(m is not member and joint in (m.start, m.end) for m in line.members)
-
-
-def _places(setting: RestraintSetting, member: Member) -> set[float]:
-    out = set()
-    for station in setting.stations:
-        s = station - member.element_offset
-        s = -s if member.reversed_ else s
-        if 0.0 <= s <= member.length:
-            out.add(s)
+def _deflections(result: LineResult, member: Member) -> list[Check]:
+    """The limits on deflections, at the member of a span where it is largest."""
+    out = []
+    for found in detail_of(result).deflections:
+        down = found.down.value - found.camber >= -found.up.value
+        worst, where = (found.down, found.down_member) if down else (found.up, found.up_member)
+        if where != member.id or found.limit is None or found.utilisation is None:
+            continue
+        value = worst.value - found.camber if down else worst.value
+        w = Working()
+        w.step("w", "", value, "deflection", "", note="from the supports of the span"
+               + (f", less the camber of {1e3 * found.camber:g} mm" if found.camber else "")
+               )  # fmt: skip
+        out.append(
+            w.check("deflection limit", found.rule, demand=value, resistance=found.limit,
+                    quantity="deflection", x=worst.x, source=worst.source,
+                    not_covered=_DEFLECTION_NOT_COVERED)
+        )  # fmt: skip
     return out
 
 
-def _cantilever(line: Line, member: Member) -> bool:
-    ends = (member.start, member.end)
-    return any(
-        line.joints[joint].support is None and not _goes_on(line, member, joint) for joint in ends
-    )
+def _factored(result: LineResult) -> bool:
+    """Whether any strength combination has a factor above 1: allowable stress design has none."""
+    given = detail_of(result).given
+    assert given is not None
+    strength = [c for c in given.combinations if c.limit_state == "strength"]
+    return any(factor > 1.0 for c in strength for factor in c.factors.values())
 
 
-def _code(category: str, settings: Settings) -> str:
-    kind = {"glulam": "timber", "lvl": "timber", "hardwood": "timber"}.get(category, category)
+def _creep(settings: Settings) -> float:
+    class_ = settings.checks.replace.get("service_class", FIGURES[_TIMBER]["service_class"].value)
+    return timber_en.KDEF.get(int(class_), 0.0)
+
+
+def _code(member: Member, result: LineResult, settings: Settings) -> str:
+    category = member.material.category if member.material is not None else ""
+    kind = category
+    if category in ("glulam", "lvl", "hardwood"):
+        kind = "timber"
     stated = settings.checks.codes.get(kind)
     if stated:
         return stated
-    family = "asce" if settings.rules.name.startswith("asce") else ""
-    return _BY_RULES[family].get(kind, "none")
-
-
-def _durations(model: LineModel, settings: Settings) -> dict[str, str]:
-    """The shortest load duration among the cases of each combination."""
-    of_case = {
-        case.name: settings.checks.durations.get(case.name, _DURATION[case.nature])
-        for case in model.cases
-    }
-    rank = timber_en.DURATIONS.index
-    return {
-        c.name: max(
-            (of_case[case] for case, factor in c.factors.items() if factor and case in of_case),
-            key=rank,
-            default="permanent",
-        )
-        for c in model.combinations
-    }
+    given = detail_of(result).given
+    assert given is not None
+    of_rules = f"{settings.rules.name} {given.rule_set.name} {given.rule_set.title}".lower()
+    return _BY_RULES["asce" if "asce" in of_rules else ""].get(kind, "none")
 
 
 def _known_figures(settings: Settings) -> None:

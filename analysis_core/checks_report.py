@@ -13,8 +13,9 @@ from analysis_core.tables import safe, table
 from analysis_core.units import DisplayUnits
 
 ByLine = Mapping[str, tuple[MemberChecks, ...]]
+_UNCONFIRMED = " †"
 CAUTION = (
-    "Clauses and figures of the checks were written from memory of the standards and not compared "
+    "† Clauses and figures of the checks were written from memory of the standards and not compared "
     "with them; a licensed engineer must do so."
 )
 
@@ -56,6 +57,7 @@ def _data(check: Check) -> dict[str, Any]:
         "use": _finite(check.use),
         "x": check.x,
         "source": check.source,
+        "confirmed": bool(check.steps) and all(s.confirmed for s in check.steps),
         "reason": check.reason,
         "not_covered": check.not_covered,
         "steps": [
@@ -81,8 +83,13 @@ def _row(mark: str, name: str, check: Check, units: DisplayUnits) -> tuple[str, 
     return (
         safe(mark), name, check.name, _value(abs(check.demand), check.quantity, units),
         _value(check.resistance, check.quantity, units), f"{check.use:.3f}", check.status,
-        check.clause,
+        f"{check.clause}{_UNCONFIRMED if _of_standard(check) else ''}",
     )  # fmt: skip
+
+
+def _of_standard(check: Check) -> bool:
+    """Whether a check rests on a clause that was not compared with its standard."""
+    return any(step.clause and not step.confirmed for step in check.steps)
 
 
 def _value(value: float, quantity: str, units: DisplayUnits) -> str:

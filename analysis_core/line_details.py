@@ -57,6 +57,8 @@ class LineDetail:
     deflections: tuple[SpanDeflection, ...]
     supports: tuple[SupportMoment, ...]
     redistributed: Redistributed | None
+    given: DetailInput | None = None
+    """What it was made of."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -81,7 +83,9 @@ def detail_of(result: LineResult) -> LineDetail:
 
 def line_detail(given: DetailInput) -> LineDetail:
     """Return the details of one line.  Never raises for what a model or a job file may hold."""
-    return LineDetail(_states(given), _deflections(given), _supports(given), _redistributed(given))
+    return LineDetail(
+        _states(given), _deflections(given), _supports(given), _redistributed(given), given
+    )
 
 
 def _states(given: DetailInput) -> tuple[State, ...]:

@@ -9,7 +9,8 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 
-from analysis_core.checks.design import MemberDesign, plates, strength_of
+from analysis_core.checks.concrete_parts import ConcreteShape, bar_depth, outside, shape_of
+from analysis_core.checks.design import MemberDesign, strength_of
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 from analysis_core.results import Extreme
 
@@ -26,16 +27,20 @@ FIGURES: Mapping[str, Figure] = {
     "link": Figure(0.375 * _INCH, "project", "diameter of stirrups, m"),
     "bar": Figure(0.75 * _INCH, "project", "diameter of main bars, m"),
 }
-_NOT_COVERED = "Not covered: axial force, torsion, development, crack control, fire."
+_MOST_STIRRUP = 60e3 * PSI  # Table 20.2.2.4(a)
+_RATIOS = {
+    0: (16.0, "simply supported"),
+    1: (18.5, "one end continuous"),
+    2: (21.0, "both ends continuous"),
+}
+_NOT_COVERED = "Not covered: torsion, development, crack control, fire."
 
 
 def check_concrete(design: MemberDesign, figures: Figures) -> list[Check]:
     """Return required reinforcement for sagging, hogging and shear."""
-    section = design.section
     fc = strength_of(design.material, "fc") or strength_of(design.material, "fck")
-    if section.shape not in ("rectangle", "tee"):
-        reason = f"A section of the shape '{section.shape or 'unknown'}' is outside this check."
-        return [not_checked("concrete strength", reason, "ACI 318-19")]
+    if reason := outside(design, 0.1 * fc * design.section.area):
+        return [not_checked("concrete strength", reason, "ACI 318-19, 9.3.3.1")]
     if not 2400 * PSI <= fc <= 10_000 * PSI:
         reason = (
             f"Material '{design.material.name}' states f'c = {fc / PSI:.0f} psi; 2,500 to 10,000 "
@@ -47,6 +52,7 @@ def check_concrete(design: MemberDesign, figures: Figures) -> list[Check]:
         _bending("sagging reinforcement", design, figures, fc, governing.sagging, bottom=True),
         _bending("hogging reinforcement", design, figures, fc, governing.hogging, bottom=False),
         _shear(design, figures, fc),
+        _least_depth(design, figures),
     ]
     return [check for check in checks if check is not None]
 
@@ -62,19 +68,65 @@ def nominal_moment(area: float, *, b: float, d: float, fc: float, fy: float) -> 
     return area * fy * (d - a / 2.0)
 
 
-def required_area(moment: float, *, b: float, d: float, fc: float, fy: float, phi: float) -> float:
-    """Return the tension reinforcement in m² for a factored moment; infinite where none does."""
+def required_area(
+    moment: float,
+    *,
+    b: float,
+    d: float,
+    fc: float,
+    fy: float,
+    phi: float,
+    flange: tuple[float, float] | None = None,
+) -> float:
+    """Return the tension reinforcement in m² for a factored moment; infinite where none does.
+
+    ``b`` is the width of the web, ``flange`` width and depth of a compressed flange.
+    """
+    wide, deep = flange or (b, 0.0)
+    nominal = moment / phi
+    if wide > b:
+        if nominal <= 0.85 * fc * wide * deep * (d - deep / 2.0):
+            return required_area(moment, b=wide, d=d, fc=fc, fy=fy, phi=phi)
+        sides = 0.85 * fc * (wide - b) * deep
+        rest = phi * (nominal - sides * (d - deep / 2.0))
+        return required_area(rest, b=b, d=d, fc=fc, fy=fy, phi=phi) + sides / fy
     block = 0.85 * fc * b
-    inside = d**2 - 2.0 * moment / (phi * block)
+    inside = d**2 - 2.0 * nominal / block
     if inside < 0.0:
         return math.inf
     return block * (d - math.sqrt(inside)) / fy
 
 
-def largest_area(*, b: float, d: float, fc: float, fy: float, e_s: float) -> float:
+def largest_area(
+    *,
+    b: float,
+    d: float,
+    fc: float,
+    fy: float,
+    e_s: float,
+    flange: tuple[float, float] | None = None,
+) -> float:
     """Return the reinforcement at which ε_t = ε_ty + 0.003 (9.3.3.1), m²."""
     c = d * 0.003 / (0.003 + fy / e_s + 0.003)
-    return 0.85 * fc * stress_block_factor(fc) * b * c / fy
+    a = stress_block_factor(fc) * c
+    wide, deep = flange or (b, 0.0)
+    block = wide * a if a <= deep else (wide - b) * deep + b * a
+    return 0.85 * fc * block / fy
+
+
+def effective_flange(shape: ConcreteShape, length: float) -> float:
+    """Return the effective width of a flange (Table 6.3.2.1), m; l_n is taken as the span."""
+    side = (shape.flange - shape.web) / 2.0
+    return shape.web + 2.0 * min(8.0 * shape.flange_depth, length / 8.0, side)
+
+
+def concrete_shear(*, b: float, d: float, fc: float, light: float, rho: float | None) -> float:
+    """Return V_c in N by Table 22.5.5.1: (a) with stirrups; (c) without, for the ratio ``rho``."""
+    root = math.sqrt(fc / PSI) * PSI * light * b * d
+    if rho is None:
+        return 2.0 * root
+    size = min(1.0, math.sqrt(2.0 / (1.0 + d / _INCH / 10.0)))
+    return float(8.0 * size * rho ** (1.0 / 3.0) * root)
 
 
 def _bending(
@@ -84,22 +136,29 @@ def _bending(
     if moment <= 0.0:
         return None
     w = Working()
-    b, bw, d = _width(design, bottom), _web(design), _depth(design, f)
+    shape, d = shape_of(design), design.section.depth - bar_depth(f)
+    bw, flange = shape.web, _flange(design, shape, top=bottom)
     w.step("d", "", d, "section length", "", note="to the centre of the bars")
     w.step("β1", "", stress_block_factor(fc), "", "Table 22.2.2.4.3")
+    if flange:
+        w.step("b_f", "", flange[0], "section length", "Table 6.3.2.1", note="effective flange")
     needed = w.step(
         "A_s", "0.85 f'c b (d - √(d² - 2 M_u / (φ 0.85 f'c b))) / f_y",
-        required_area(moment, b=b, d=d, fc=fc, fy=f["f_y"], phi=f["phi_t"]), "area", "22.2, 22.3",
+        required_area(moment, b=bw, d=d, fc=fc, fy=f["f_y"], phi=f["phi_t"], flange=flange),
+        "area", "22.2, 22.3",
         note=f"φ = {f['phi_t']:g}, tension-controlled",
     )  # fmt: skip
-    root = math.sqrt(fc / PSI)
+    root, width = math.sqrt(fc / PSI), bw
+    in_tension = shape.compressed_flange(top=not bottom)[0]
+    if design.cantilever and in_tension > bw:  # statically determinate, flange in tension
+        width = min(in_tension, 2.0 * bw)
     least = w.step(
-        "A_s,min", "max(3 √f'c, 200) b_w d / f_y", max(3.0 * root, 200.0) * PSI * bw * d / f["f_y"],
-        "area", "9.6.1.2",
+        "A_s,min", "max(3 √f'c, 200) b_w d / f_y",
+        max(3.0 * root, 200.0) * PSI * width * d / f["f_y"], "area", "9.6.1.2",
     )  # fmt: skip
     largest = w.step(
-        "A_s,max", "", largest_area(b=b, d=d, fc=fc, fy=f["f_y"], e_s=f["E_s"]), "area",
-        "9.3.3.1", note="ε_t = ε_ty + 0.003",
+        "A_s,max", "", largest_area(b=bw, d=d, fc=fc, fy=f["f_y"], e_s=f["E_s"], flange=flange),
+        "area", "9.3.3.1", note="ε_t = ε_ty + 0.003",
     )  # fmt: skip
     return w.check(
         name, "ACI 318-19, 9.3.3, 9.6.1, 22.2", demand=max(needed, least), resistance=largest,
@@ -109,22 +168,30 @@ def _bending(
 
 def _shear(design: MemberDesign, f: Figures, fc: float) -> Check:
     w = Working()
-    b, d = _web(design), _depth(design, f)
+    b, d = shape_of(design).web, design.section.depth - bar_depth(f)
     demand, root = abs(design.governing.shear.value), math.sqrt(fc / PSI)
+    fyt = min(f["f_y"], _MOST_STIRRUP)
     concrete = w.step(
-        "V_c", "2 λ √f'c b_w d", 2.0 * f["lambda"] * root * PSI * b * d, "force",
-        "Table 22.5.5.1(a)", note="with at least the least stirrups",
+        "V_c", "2 λ √f'c b_w d", concrete_shear(b=b, d=d, fc=fc, light=f["lambda"], rho=None),
+        "force", "Table 22.5.5.1(a)", note="with at least the least stirrups",
+    )  # fmt: skip
+    rho = max(3.0 * root, 200.0) * PSI / f["f_y"]
+    plain = w.step(
+        "V_c,0", "8 λ_s λ ρ_w^(1/3) √f'c b_w d",
+        concrete_shear(b=b, d=d, fc=fc, light=f["lambda"], rho=rho), "force",
+        "Table 22.5.5.1(c)", note="without stirrups, with the least main reinforcement",
     )  # fmt: skip
     most = w.step(
         "φ (V_c + 8 √f'c b_w d)", "", f["phi_v"] * (concrete + 8.0 * root * PSI * b * d), "force",
         "22.5.1.2",
     )  # fmt: skip
     steel = max(demand / f["phi_v"] - concrete, 0.0)
-    least = max(0.75 * root, 50.0) * PSI * b / f["f_y"]
-    if demand <= f["phi_v"] * f["lambda"] * root * PSI * b * d:
+    least = max(0.75 * root, 50.0) * PSI * b / fyt
+    threshold = f["phi_v"] * min(f["lambda"] * root * PSI * b * d, plain)
+    if demand <= threshold:
         w.step("A_v/s", "", 0.0, "reinforcement per length", "9.6.3.1", note="no stirrups required")
     else:
-        w.step("A_v/s", "V_s / (f_yt d) ≥ least", max(steel / (f["f_y"] * d), least),
+        w.step("A_v/s", "V_s / (f_yt d) ≥ least", max(steel / (fyt * d), least),
                "reinforcement per length", "22.5.8.5.3, 9.6.3.4",
                note="stirrups per length")  # fmt: skip
     return w.check(
@@ -133,17 +200,27 @@ def _shear(design: MemberDesign, f: Figures, fc: float) -> Check:
     )  # fmt: skip
 
 
-def _depth(design: MemberDesign, f: Figures) -> float:
-    return design.section.depth - f["cover"] - f["link"] - f["bar"] / 2.0
+def _least_depth(design: MemberDesign, f: Figures) -> Check:
+    """Table 9.3.1.1: depth over which deflections need not be computed."""
+    w, span = Working(), design.span or design.length
+    ratio, words = (8.0, "cantilever") if design.cantilever else _RATIOS[design.continuous_ends]
+    least = span / ratio
+    w.step("l/h", "", ratio, "", "Table 9.3.1.1", note=words)
+    factor = w.step("factor", "0.4 + {f_y} / 100 ksi", 0.4 + f["f_y"] / (100e3 * PSI), "",
+                    "9.3.1.1.1", f_y=(f["f_y"], "stress"))  # fmt: skip
+    least = w.step("h_min", "{factor} {l} / {ratio}", least * factor, "section length",
+                   "Table 9.3.1.1", factor=(factor, ""), l=(span, "length"),
+                   ratio=(ratio, ""))  # fmt: skip
+    return w.check(
+        "span over depth", "ACI 318-19, 9.3.1", demand=span / design.section.depth,
+        resistance=span / least, quantity="",
+        not_covered="Holds where no partitions or finishes are attached that deflections damage; "
+        "otherwise deflections must be computed (24.2.3).",
+    )  # fmt: skip
 
 
-def _width(design: MemberDesign, bottom_tension: bool) -> float:
-    if design.section.shape == "tee" and not bottom_tension:
-        return plates(design.section)["web_thickness"]
-    return design.section.width
-
-
-def _web(design: MemberDesign) -> float:
-    if design.section.shape == "tee":
-        return plates(design.section)["web_thickness"]
-    return design.section.width
+def _flange(design: MemberDesign, shape: ConcreteShape, *, top: bool) -> tuple[float, float] | None:
+    wide, deep = shape.compressed_flange(top=top)
+    if wide <= shape.web:
+        return None
+    return effective_flange(shape, design.span or design.length), deep

@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import math
+import re
+from collections.abc import Iterator
 from dataclasses import dataclass
 from itertools import pairwise
 
@@ -13,18 +16,32 @@ from analysis_core.results import Extreme
 
 Floats = NDArray[np.float64]
 
+# Part of the resistance below which an axial force is taken as none; common practice.
+NEGLIGIBLE = 1e-3
+_STAINLESS = re.compile(r"stainless|edelstahl|nichtrostend|inox|rostfri|\b1\.4[34]\d\d", re.I)
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class EffectField:
     """Effects along a member under one combination in one arrangement: they occur together.
 
     ``x`` (N,) m from the member's start; ``moment`` N·m, sagging positive; ``shear`` N.
+    ``along``: places and moments over everything that runs on straight from the member without
+    being held between, in the same coordinate; None where nothing does.  ``axial``: the lowest
+    and the highest axial force, tension positive.
     """
 
     source: str
     x: Floats
     moment: Floats
     shear: Floats
+    along: tuple[Floats, Floats] | None = None
+    axial: tuple[float, float] = (0.0, 0.0)
+
+    @property
+    def stretch(self) -> tuple[Floats, Floats]:
+        """Places and moments over the stretch in which the member may buckle sideways."""
+        return self.along if self.along is not None else (self.x, self.moment)
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,9 +55,11 @@ class Governing:
 
 @dataclass(frozen=True, slots=True)
 class Restraints:
-    """Places (m from the member's start, ends included) where each flange is held sideways.
+    """Places (m from the member's start) where each flange is held sideways.
 
-    ``continuous``: held all along, as by a slab.  ``reason`` says how it was decided.
+    They may lie beyond the member's ends, where it runs on unheld.  ``loose``: places that end a
+    stretch without being held (the tip of a cantilever).  ``continuous``: held all along, as by a
+    slab.  ``reason`` says how it was decided.
     """
 
     top: tuple[float, ...]
@@ -48,11 +67,42 @@ class Restraints:
     top_continuous: bool = False
     bottom_continuous: bool = False
     reason: str = ""
+    loose: tuple[float, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Bearing:
+    """What a member presses on at one of its ends: the force (N) by the combination's source."""
+
+    joint: int
+    width: float
+    """Along the line, m; 0 where unknown."""
+    at_end: bool
+    """Whether the line ends here, so that the beam goes on to one side alone."""
+    forces: tuple[tuple[str, float], ...]
+    x: float = 0.0
+    """From the member's start, m."""
+
+
+@dataclass(frozen=True, slots=True)
+class Sag:
+    """Largest deflection of the span that a member is part of, m, under one requirement."""
+
+    name: str
+    value: float
+    span: float
+    cantilever: bool
+    source: str
+    x: float = 0.0
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class MemberDesign:
-    """One member, ready to be checked."""
+    """One member, ready to be checked.
+
+    ``continuous_ends``: of the two ends of its span, how many are held against turning by what
+    lies beyond them.  ``span``: length of the span in m; 0: that of the member.
+    """
 
     member: int
     section: Section
@@ -62,14 +112,27 @@ class MemberDesign:
     governing: Governing
     restraints: Restraints
     cantilever: bool = False
+    continuous_ends: int = 0
+    span: float = 0.0
+    bearings: tuple[Bearing, ...] = ()
+    sags: tuple[Sag, ...] | None = ()
+    """None where the combinations do not give them."""
+
+    @property
+    def axial(self) -> tuple[float, float]:
+        """Lowest and highest axial force of all fields, N, tension positive."""
+        low = min((f.axial[0] for f in self.fields), default=0.0)
+        high = max((f.axial[1] for f in self.fields), default=0.0)
+        return min(low, 0.0), max(high, 0.0)
 
 
 @dataclass(frozen=True, slots=True)
 class UnbracedSegment:
     """A length over which the compression flange is not held, under one field.
 
-    Moments (N·m) at the ends and at the quarter points, and the largest absolute one; ``flange``
-    is the one compressed at that place.
+    ``largest`` is the largest moment in it, of either sign, N·m: critical moments belong to it.
+    ``moments`` at the ends and at the quarter points; ``flange`` is the one that is not held and
+    is compressed somewhere in the segment.  ``free``: one end is not held at all.
     """
 
     start: float
@@ -79,6 +142,7 @@ class UnbracedSegment:
     at: float
     moments: tuple[float, float, float, float, float]
     source: str
+    free: bool = False
 
     @property
     def length(self) -> float:
@@ -87,7 +151,7 @@ class UnbracedSegment:
 
 
 def segments(design: MemberDesign, field: EffectField) -> list[UnbracedSegment]:
-    """Return the unbraced segments of both flanges that are compressed somewhere in them."""
+    """Return the unbraced segments at the member in which the flange not held is compressed."""
     out = []
     held = design.restraints
     for flange, sign, places, continuous in (
@@ -96,20 +160,58 @@ def segments(design: MemberDesign, field: EffectField) -> list[UnbracedSegment]:
     ):
         if continuous:
             continue
-        for start, end in pairwise(places):
-            inside = (field.x >= start - 1e-9) & (field.x <= end + 1e-9)
-            compressed = sign * field.moment[inside]
-            if not compressed.size or compressed.max() <= 0.0:
+        x, moment = field.stretch
+        for start, end in _lengths(design, places):
+            inside = (x >= start - 1e-9) & (x <= end + 1e-9)
+            if not inside.any() or (sign * moment[inside]).max() <= _noise(moment):
                 continue
-            at = float(field.x[inside][int(compressed.argmax())])
+            index = int(np.abs(moment[inside]).argmax())
             quarter = np.linspace(start, end, 5)
-            moments = np.interp(quarter, field.x, field.moment)
-            m0, m1, m2, m3, m4 = (float(m) for m in moments)
-            largest = float(compressed.max())
+            m0, m1, m2, m3, m4 = (float(m) for m in np.interp(quarter, x, moment))
+            largest = float(moment[inside][index])
+            free = any(abs(p - e) < 1e-9 for p in held.loose for e in (start, end))
             out.append(
-                UnbracedSegment(start, end, flange, largest, at, (m0, m1, m2, m3, m4), field.source)
-            )
+                UnbracedSegment(
+                    start, end, flange, largest, float(x[inside][index]), (m0, m1, m2, m3, m4),
+                    field.source, free,
+                )
+            )  # fmt: skip
     return out
+
+
+def _lengths(design: MemberDesign, places: tuple[float, ...]) -> Iterator[tuple[float, float]]:
+    """The lengths between ``places`` that the member has a part in."""
+    for start, end in pairwise(sorted({*places, *design.restraints.loose})):
+        if end > 1e-9 and start < design.length - 1e-9:
+            yield start, end
+
+
+def _noise(moment: Floats) -> float:
+    return 1e-9 * float(np.abs(moment).max(initial=0.0))
+
+
+def moment_gradient(segment: UnbracedSegment) -> float:
+    """Return the factor for the shape of the moments over an unbraced segment.
+
+    12.5 M_max / (2.5 M_max + 3 M_2 + 4 M_3 + 3 M_4), absolute values, with the moments at the
+    quarter points: AISC 360, (F1-1), from memory; 1 where an end is free.
+    """
+    if segment.free:
+        return 1.0
+    m0, m1, m2, m3, m4 = (abs(m) for m in segment.moments)
+    top = max(m0, m1, m2, m3, m4, abs(segment.largest))
+    if top == 0.0:
+        return 1.0
+    return 12.5 * top / (2.5 * top + 3.0 * m1 + 4.0 * m2 + 3.0 * m3)
+
+
+def lateral_length(design: MemberDesign) -> float:
+    """Return the longest length between places where both flanges are held, m."""
+    held = design.restraints
+    both = sorted({*(p for p in held.top if p in held.bottom), *held.loose})
+    if held.top_continuous and held.bottom_continuous:
+        return 0.0
+    return max((b - a for a, b in _lengths(design, tuple(both))), default=design.length)
 
 
 def plates(section: Section) -> dict[str, float]:
@@ -120,3 +222,33 @@ def plates(section: Section) -> dict[str, float]:
 def strength_of(material: Material, name: str) -> float:
     """Return a strength by its symbol in Pa; 0 where the material does not state it."""
     return dict(material.strength).get(name, 0.0)
+
+
+def unlike_profile(section: Section) -> str:
+    """Return why the dimensions of a section do not serve for its resistance; "" where they do."""
+    d = plates(section)
+    roll = d.get("roll", 0.0)
+    lying = abs(math.cos(roll)) < 1e-3 and section.shape == "hollow rectangle"
+    solid = section.shape in ("rectangle", "tube", "circle")
+    if abs(math.sin(roll)) > 1e-3 and not (lying or solid):
+        return (
+            f"The section {section.name} lies turned by {math.degrees(roll):.0f}° in the member; "
+            f"bending about its strong axis alone is covered."
+        )
+    if abs(section.inertia_product) > 1e-3 * section.inertia:
+        return (
+            f"The section {section.name} does not bend in its plane alone; bending about one "
+            f"principal axis is covered."
+        )
+    modulus = d.get("section_modulus_top", 0.0)
+    if section.top > 0.0 and abs(modulus * section.top - section.inertia) > 0.02 * section.inertia:
+        return (
+            f"The second moment of area of {section.name} is not that of its dimensions "
+            f"(it was replaced, or stated with the profile)."
+        )
+    return ""
+
+
+def is_stainless(material: Material) -> bool:
+    """Whether a steel is stainless by its name: other standards hold for it."""
+    return bool(_STAINLESS.search(material.name))

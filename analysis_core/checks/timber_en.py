@@ -1,21 +1,24 @@
-"""Rectangular timber members by EN 1995-1-1:2004 + A1/A2: bending, shear, lateral buckling.
+"""Rectangular timber members by EN 1995-1-1:2004 + A1/A2: bending, shear, bearing, deflection.
 
 Symbols are those of the standard; clauses are written from memory of it and marked as not
 confirmed.  The action of the shortest duration in a combination sets k_mod, so a combination with
-a smaller total load can govern; every combination is checked with its own k_mod.
+a smaller total load can govern: each combination is also checked without its shorter actions.
 """
 
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 
 from analysis_core.checks.design import (
+    NEGLIGIBLE,
+    Bearing,
     EffectField,
     MemberDesign,
     UnbracedSegment,
     segments,
     strength_of,
+    unlike_profile,
 )
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 
@@ -28,21 +31,27 @@ _KMOD = {  # Table 3.1, solid timber, glued laminated timber and LVL, by service
 FIGURES: Mapping[str, Figure] = {
     "gamma_M_solid": Figure(1.30, "EN 1995-1-1, Table 2.3", "solid timber", national=True),
     "gamma_M_glulam": Figure(1.25, "EN 1995-1-1, Table 2.3", "glued laminated", national=True),
+    "gamma_M_lvl": Figure(1.20, "EN 1995-1-1, Table 2.3", "laminated veneer", national=True),
+    "s_lvl": Figure(0.15, "EN 1995-1-1, 3.4(3)", "size effect of laminated veneer"),
     "k_cr": Figure(0.67, "EN 1995-1-1, 6.1.7(2)", "cracks", national=True),
     "service_class": Figure(1, "EN 1995-1-1, 2.3.1.3", "service class of the project"),
+    "k_c90": Figure(1.0, "EN 1995-1-1, 6.1.5", "bearing; up to 1.5, 1.75 on discrete supports"),
+    "w_inst": Figure(300.0, "EN 1995-1-1, Table 7.2", "span over w_inst", national=True),
+    "w_net_fin": Figure(250.0, "EN 1995-1-1, Table 7.2", "span over w_net,fin", national=True),
     "k_sys": Figure(1.0, "EN 1995-1-1, 6.6", "1.1 where members share the load"),
 }
-_NOT_COVERED = (
-    "Not covered: axial force, torsion, notches, holes, bearing, vibration, fire, curved members."
-)
+KDEF = {1: 0.60, 2: 0.80, 3: 2.00}
+"""Table 3.2, solid timber, glued laminated timber and LVL, by service class."""
+_NOT_COVERED = "Not covered: torsion, notches, holes, vibration, fire, curved members."
 
 
 def check_timber(
-    design: MemberDesign, figures: Figures, durations: Mapping[str, str], glulam: bool
+    design: MemberDesign, figures: Figures, durations: Mapping[str, str], kind: str = "timber"
 ) -> list[Check]:
-    """Return the checks of a timber member: bending with lateral buckling, and shear.
+    """Return the checks of a timber member: bending, shear, bearing and deflection.
 
-    ``durations``: the load-duration class that sets k_mod, by the name of a combination.
+    ``durations``: the load-duration class that sets k_mod, by the source of a field.  ``kind``:
+    "timber", "hardwood", "glulam" or "lvl".
     """
     section = design.section
     fm, fv = strength_of(design.material, "fmk"), strength_of(design.material, "fvk")
@@ -55,15 +64,24 @@ def check_timber(
             f"the job file (materials: strength: {{fmk: 24 MPa, fvk: 4 MPa}})."
         )
         return [not_checked("timber resistance", reason, "EN 1995-1-1")]
+    reason = unlike_profile(section)
+    if int(figures["service_class"]) not in _KMOD:
+        reason = f"Service class {figures['service_class']:g} is not one of 1, 2 and 3."
+    if max(map(abs, design.axial)) > NEGLIGIBLE * section.area * fm:
+        reason = "The member carries an axial force as well (6.2.3, 6.3.2); that is not covered."
+    if reason:
+        return [not_checked("timber resistance", reason, "EN 1995-1-1")]
     bending: Check | None = None
     shear: Check | None = None
     for field in design.fields:
-        duration = durations.get(field.source.split(" (")[0], "permanent")
-        check = _bending(design, figures, field, duration, glulam)
+        duration = durations.get(field.source, "permanent")
+        check = _bending(design, figures, field, duration, kind)
         bending = check if bending is None or check.use > bending.use else bending
-        check = _shear(design, figures, field, duration, glulam)
+        check = _shear(design, figures, field, duration, kind)
         shear = check if shear is None or check.use > shear.use else shear
-    return [check for check in (bending, shear) if check is not None]
+    made = [check for check in (bending, shear) if check is not None]
+    made += [_bearing(design, figures, b, durations, kind) for b in design.bearings]
+    return [*made, *_deflections(design, figures)]
 
 
 def modification_factor(service_class: int, duration: str) -> float:
@@ -71,9 +89,14 @@ def modification_factor(service_class: int, duration: str) -> float:
     return _KMOD[service_class][DURATIONS.index(duration)]
 
 
-def size_factor(depth: float, glulam: bool) -> float:
-    """Return k_h (3.2(3), 3.3(3)) for the depth of the section in m."""
-    if glulam:
+def size_factor(depth: float, kind: str, s: float = 0.15) -> float:
+    """Return k_h (3.2(3), 3.3(3), 3.4(3)) for the depth of the section in m.
+
+    That of laminated veneer, with its exponent ``s``, falls below 1 for deep sections.
+    """
+    if kind == "lvl":
+        return float(min((0.300 / depth) ** s, 1.2))
+    if kind == "glulam":
         return float(max(1.0, min((0.600 / depth) ** 0.1, 1.1)))
     return float(max(1.0, min((0.150 / depth) ** 0.2, 1.3)))
 
@@ -88,42 +111,58 @@ def critical_factor(slenderness: float) -> float:
 
 
 def _design_strength(
-    w: Working, symbol: str, value: float, f: Figures, duration: str, glulam: bool, size: float
+    w: Working,
+    symbol: str,
+    value: float,
+    f: Figures,
+    duration: str,
+    kind: str,
+    size: float,
+    *,
+    shared: bool = True,
 ) -> float:
     class_ = int(f["service_class"])
     k_mod = w.step("k_mod", "", modification_factor(class_, duration), "", "Table 3.1",
                    note=f"service class {class_}, {duration} action")  # fmt: skip
-    gamma = f["gamma_M_glulam"] if glulam else f["gamma_M_solid"]
+    k_sys = f["k_sys"] if shared else 1.0
+    gamma = f[{"glulam": "gamma_M_glulam", "lvl": "gamma_M_lvl"}.get(kind, "gamma_M_solid")]
     return w.step(
         f"{symbol},d", "{k_mod} {k_h} {k_sys} {f_k} / {gamma_M}",
-        k_mod * size * f["k_sys"] * value / gamma, "stress", "2.4.1(1), (2.14)",
-        k_mod=(k_mod, ""), k_h=(size, ""), k_sys=(f["k_sys"], ""), f_k=(value, "stress"),
+        k_mod * size * k_sys * value / gamma, "stress", "2.4.1(1), (2.14)",
+        k_mod=(k_mod, ""), k_h=(size, ""), k_sys=(k_sys, ""), f_k=(value, "stress"),
         gamma_M=(gamma, ""),
     )  # fmt: skip
 
 
 def _bending(
-    design: MemberDesign, f: Figures, field: EffectField, duration: str, glulam: bool
+    design: MemberDesign, f: Figures, field: EffectField, duration: str, kind: str
 ) -> Check:
     w = Working()
     b, h = design.section.width, design.section.depth
     strength = _design_strength(
-        w, "f_m", strength_of(design.material, "fmk"), f, duration, glulam, size_factor(h, glulam)
-    )
+        w, "f_m", strength_of(design.material, "fmk"), f, duration, kind,
+        size_factor(h, kind, f["s_lvl"]),
+    )  # fmt: skip
     modulus = w.step("W", "{b} {h}² / 6", b * h**2 / 6.0, "section modulus", "",
                      b=(b, "section length"), h=(h, "section length"))  # fmt: skip
-    worst: tuple[float, float, float, float] | None = None
-    for segment in segments(design, field):
-        k = critical_factor(_relative_slenderness(design, segment, glulam))
-        use = segment.largest / (k * strength * modulus)
+    worst: tuple[float, float, float, float, UnbracedSegment | None, float] | None = None
+    for segment, slender in _slender_segments(design, field, kind):
+        k = critical_factor(slender)
+        use = abs(segment.largest) / (k * strength * modulus)
         if worst is None or use > worst[0]:
-            worst = use, segment.largest, k, segment.at
+            worst = use, segment.largest, k, segment.at, segment, slender
     index = int(abs(field.moment).argmax())
-    plain = abs(float(field.moment[index]))
-    if worst is None or plain / (strength * modulus) > worst[0]:
-        worst = 0.0, plain, 1.0, float(field.x[index])
-        w.step("k_crit", "", 1.0, "", "6.3.3(5)", note="the compressed edge is held, or stocky")
+    plain = float(field.moment[index])
+    if worst is None or abs(plain) / (strength * modulus) > worst[0]:
+        worst = 0.0, plain, 1.0, float(field.x[index]), None, 0.0
+    segment_, slender = worst[4], worst[5]
+    if segment_ is None:
+        w.step("k_crit", "", 1.0, "", "6.3.3(5)", note="the compressed edge is held all along")
     else:
+        w.step("l_ef", "", segment_.length + 2.0 * h, "length", "Table 6.1",
+               note=f"the {segment_.flange} edge not held, plus 2 h")  # fmt: skip
+        w.step("λ_rel,m", "√(f_m,k / σ_m,crit), σ_m,crit = 0.78 b² E_0,05 / (h l_ef)", slender, "",
+               "6.3.3(2), (6.30), (6.32)")  # fmt: skip
         w.step("k_crit", "", worst[2], "", "6.3.3(4), (6.34)")
     resistance = w.step("M_Rd", "{k_crit} {f} {W}", worst[2] * strength * modulus, "moment",
                         "6.1.6, 6.3.3(3)", k_crit=(worst[2], ""), f=(strength, "stress"),
@@ -134,23 +173,32 @@ def _bending(
     )  # fmt: skip
 
 
-def _relative_slenderness(design: MemberDesign, segment: UnbracedSegment, glulam: bool) -> float:
-    """6.3.3(2): σ_crit = 0.78 b² E_0.05 / (h l_ef), with l_ef the whole segment plus 2 h."""
+def _slender_segments(
+    design: MemberDesign, field: EffectField, kind: str
+) -> Iterator[tuple[UnbracedSegment, float]]:
+    for segment in segments(design, field):
+        yield segment, _relative_slenderness(design, segment, kind)
+
+
+def _relative_slenderness(design: MemberDesign, segment: UnbracedSegment, kind: str) -> float:
+    """6.3.3(2): σ_crit = 0.78 b² E_0.05 / (h l_ef), with l_ef the whole segment plus 2 h.
+
+    For hardwood the same: 0.78 is what E/G = 16 gives.
+    """
     b, h = design.section.width, design.section.depth
-    ratio = 5.0 / 6.0 if glulam else 2.0 / 3.0  # E_0.05 over the mean modulus, EN 14080, EN 338
+    # E_0.05 over the mean modulus: EN 14080, EN 338 (hardwood 0.84: 2/3 is on the safe side).
+    ratio = 5.0 / 6.0 if kind in ("glulam", "lvl") else 2.0 / 3.0
     low = ratio * design.material.elastic_modulus
     effective = segment.length + 2.0 * h
     critical = 0.78 * b**2 * low / (h * effective)
     return math.sqrt(strength_of(design.material, "fmk") / critical)
 
 
-def _shear(
-    design: MemberDesign, f: Figures, field: EffectField, duration: str, glulam: bool
-) -> Check:
+def _shear(design: MemberDesign, f: Figures, field: EffectField, duration: str, kind: str) -> Check:
     w = Working()
     b, h = design.section.width, design.section.depth
     strength = _design_strength(
-        w, "f_v", strength_of(design.material, "fvk"), f, duration, glulam, 1.0
+        w, "f_v", strength_of(design.material, "fvk"), f, duration, kind, 1.0
     )
     effective = w.step("b_ef", "{k_cr} {b}", f["k_cr"] * b, "section length", "6.1.7(2), (6.13a)",
                        k_cr=(f["k_cr"], ""), b=(b, "section length"))  # fmt: skip
@@ -163,3 +211,83 @@ def _shear(
         "shear", "EN 1995-1-1, 6.1.7", demand=demand, resistance=resistance, quantity="force",
         x=float(field.x[index]), source=field.source, not_covered=_NOT_COVERED,
     )  # fmt: skip
+
+
+def _bearing(
+    design: MemberDesign, f: Figures, bearing: Bearing, durations: Mapping[str, str], kind: str
+) -> Check:
+    """6.1.5: compression across the grain over a bearing whose width is known."""
+    name, clause = f"bearing at joint {bearing.joint}", "EN 1995-1-1, 6.1.5"
+    fc = strength_of(design.material, "fc90k")
+    if not fc:
+        reason = (
+            f"Material '{design.material.name}' states no strength across the grain; give it in "
+            f"the job file (materials: strength: {{fc90k: 2.5 MPa}})."
+        )
+        return not_checked(name, reason, clause)
+    if bearing.width <= 0.0:
+        return not_checked(name, "The width of the bearing is not known.", clause)
+    worst: Check | None = None
+    for source, force in bearing.forces:
+        w = Working()
+        duration = durations.get(source, "permanent")
+        strength = _design_strength(w, "f_c,90", fc, f, duration, kind, 1.0, shared=False)
+        length = w.step(
+            "l_ef", "", effective_bearing(bearing.width, at_end=bearing.at_end), "section length",
+            "6.1.5(1)", note="up to 30 mm more on each side where the beam goes on",
+        )  # fmt: skip
+        resistance = w.step(
+            "F_c,90,Rd", "{k_c90} {f_c90d} {b} {l_ef}",
+            f["k_c90"] * strength * design.section.width * length, "force", "6.1.5(1), (6.3)",
+            k_c90=(f["k_c90"], ""), f_c90d=(strength, "stress"),
+            b=(design.section.width, "section length"), l_ef=(length, "section length"),
+        )  # fmt: skip
+        check = w.check(
+            name, clause, demand=force, resistance=resistance, quantity="force", x=bearing.x,
+            source=source, not_covered=_BEARING_NOT_COVERED,
+        )  # fmt: skip
+        worst = check if worst is None or check.use > worst.use else worst
+    return worst or not_checked(name, "Nothing presses on the bearing.", clause)
+
+
+def effective_bearing(width: float, *, at_end: bool) -> float:
+    """Return the contact length of 6.1.5(1), m: 30 mm more, at most the width, where it goes on."""
+    more = min(0.030, width)
+    return width + more if at_end else width + 2.0 * more
+
+
+def _deflections(design: MemberDesign, f: Figures) -> list[Check]:
+    """2.2.3, 7.2: at once, and in the end with creep; of cantilevers half the ratio."""
+    if design.sags is None:
+        reason = "The combinations have no characteristic and quasi-permanent ones."
+        return [not_checked("deflection", reason, "EN 1995-1-1, 2.2.3")]
+    out = []
+    creep = KDEF[int(f["service_class"])]
+    for sag in design.sags:
+        w = Working()
+        ratio = f[sag.name] / (2.0 if sag.cantilever else 1.0)
+        if sag.name == "w_net_fin":
+            w.step("k_def", "", creep, "", "Table 3.2",
+                   note=f"service class {f['service_class']:g}")  # fmt: skip
+        w.step(sag.name, _FORMULAS[sag.name], abs(sag.value), "deflection", "2.2.3(5), (2.2)")
+        limit = w.step("limit", "{l} / {n}", sag.span / ratio, "deflection", "Table 7.2",
+                       l=(sag.span, "length"), n=(ratio, ""))  # fmt: skip
+        name = "deflection at once" if sag.name == "w_inst" else "deflection in the end"
+        check = w.check(name, "EN 1995-1-1, 7.2", demand=sag.value, resistance=limit,
+                        quantity="deflection", x=sag.x, source=sag.source,
+                        not_covered=_SAG_NOT_COVERED)  # fmt: skip
+        out.append(check)
+    return out
+
+
+_BEARING_NOT_COVERED = (
+    "The bearing counts as wide as the beam; a force near it may allow less (6.1.5(4))."
+)
+_FORMULAS: Mapping[str, str] = {
+    "w_inst": "w_G + w_Q,1 + Σ ψ_0,i w_Q,i",
+    "w_net_fin": "w_G (1 + k_def) + w_Q,1 (1 + ψ_2,1 k_def) + Σ w_Q,i (ψ_0,i + ψ_2,i k_def)",
+}
+_SAG_NOT_COVERED = (
+    "Deflection by shear counts where the job file makes members flexible in shear (analysis: "
+    "shear_flexible). Not covered: camber, slip of connections, vibration."
+)

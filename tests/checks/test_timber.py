@@ -12,7 +12,7 @@ FIGURES = Figures(timber_en.FIGURES, {})
 def test_a_joist_is_checked_with_the_duration_of_its_combination():
     design = simple_span(rectangle(0.06, 0.2), C24, 4.0, 1.5e3, continuous=True)
     medium, permanent = (
-        timber_en.check_timber(design, FIGURES, {"U1": duration}, False)
+        timber_en.check_timber(design, FIGURES, {"U1": duration})
         for duration in ("medium", "permanent")
     )
 
@@ -33,17 +33,19 @@ def test_the_critical_factor_on_both_sides_of_its_limits(slender, factor):
 
 
 @pytest.mark.parametrize(
-    ("depth", "glulam", "factor"),
+    ("depth", "kind", "factor"),
     [
-        (0.15, False, 1.0),
-        (0.1, False, 1.0845),
-        (0.03, False, 1.3),
-        (0.6, True, 1.0),
-        (0.2, True, 1.1),
+        (0.15, "timber", 1.0),
+        (0.1, "timber", 1.0845),
+        (0.03, "hardwood", 1.3),
+        (0.6, "glulam", 1.0),
+        (0.2, "glulam", 1.1),
+        (0.3, "lvl", 1.0),
+        (0.6, "lvl", 0.9013),
     ],
 )
-def test_shallow_sections_are_stronger_up_to_a_limit(depth, glulam, factor):
-    assert timber_en.size_factor(depth, glulam) == pytest.approx(factor, abs=5e-5)
+def test_shallow_sections_are_stronger_up_to_a_limit(depth, kind, factor):
+    assert timber_en.size_factor(depth, kind) == pytest.approx(factor, abs=5e-5)
 
 
 def test_a_slender_beam_without_restraint_loses_strength():
@@ -51,6 +53,6 @@ def test_a_slender_beam_without_restraint_loses_strength():
     held = simple_span(rectangle(0.05, 0.4), C24, 8.0, 1e3, continuous=True)
 
     assert (
-        timber_en.check_timber(free, FIGURES, {}, False)[0].resistance
-        < timber_en.check_timber(held, FIGURES, {}, False)[0].resistance
+        timber_en.check_timber(free, FIGURES, {})[0].resistance
+        < timber_en.check_timber(held, FIGURES, {})[0].resistance
     )

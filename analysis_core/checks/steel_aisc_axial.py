@@ -1,0 +1,117 @@
+"""Axial force with flexure by AISC 360: D2, E3 and H1.1."""
+
+from __future__ import annotations
+
+import math
+
+from analysis_core.checks.design import (
+    NEGLIGIBLE,
+    EffectField,
+    MemberDesign,
+    lateral_length,
+    plates,
+)
+from analysis_core.checks.working import Check, Figures, Working, not_checked
+
+_NAME, _CLAUSE = "axial force and flexure", "AISC 360, H1.1"
+_NOT_COVERED = (
+    "Not covered: effects of second order, notional loads and reduced stiffness (C2); K = 1 holds "
+    "with them. Not covered: torsional buckling (E4)."
+)
+
+
+def check_axial(
+    design: MemberDesign, f: Figures, fy: float, flexure: Check, *, allowable: bool
+) -> list[Check]:
+    """Return the interaction check; none where the axial force is next to nothing.
+
+    ``flexure`` is the check whose available strength stands for M_c.
+    """
+    low, high = design.axial
+    if max(high, -low) <= NEGLIGIBLE * design.section.area * fy:
+        return []
+    if flexure.status == "not checked":
+        return [not_checked(_NAME, flexure.reason, _CLAUSE)]
+    if low < 0.0:
+        slender = _slender_walls(design, f["E"], fy)
+        if slender or design.section.shape == "channel":
+            reason = slender or "Channels may buckle by twisting (E4); that is not covered."
+            return [not_checked(_NAME, reason, _CLAUSE)]
+    return [_interaction(design, f, fy, flexure, allowable)]
+
+
+def critical_stress(elastic: float, fy: float) -> float:
+    """Return F_cr (E3-2, E3-3) for the elastic buckling stress F_e, Pa."""
+    if fy / elastic <= 2.25:
+        return float(0.658 ** (fy / elastic) * fy)
+    return 0.877 * elastic
+
+
+def interaction(axial: float, flexure: float) -> float:
+    """Return the sum of (H1-1a), (H1-1b) from P_r/P_c and M_r/M_c; 1 is allowed."""
+    if axial >= 0.2:
+        return axial + 8.0 / 9.0 * flexure
+    return axial / 2.0 + flexure
+
+
+def _interaction(
+    design: MemberDesign, f: Figures, fy: float, flexure: Check, allowable: bool
+) -> Check:
+    w, area, e = Working(), design.section.area, f["E"]
+    slender = _slenderness(design, w)
+    elastic = math.pi**2 * e / slender**2
+    w.step("F_e", "π² {E} / {s}²", elastic, "stress", "(E3-4)", E=(e, "stress"), s=(slender, ""))
+    stress = w.step("F_cr", "", critical_stress(elastic, fy), "stress", "(E3-2), (E3-3)")
+    factors = (
+        (1.0 / f["Omega_c"], 1.0 / f["Omega_t"]) if allowable else (f["phi_c"], f["phi_t"])
+    )  # fmt: skip
+    compression = w.step("P_c", "", factors[0] * stress * area, "force", "E1, (E3-1)")
+    tension = w.step("T_c", "", factors[1] * fy * area, "force", "D2(a)", note="yielding")
+    worst: tuple[float, EffectField, float, float] | None = None
+    for field in design.fields:
+        moment = float(abs(field.moment).max())
+        for force in field.axial:
+            share = -force / compression if force < 0.0 else force / tension
+            use = interaction(share, moment / flexure.resistance)
+            if worst is None or use > worst[0]:
+                worst = use, field, force, moment
+    if worst is None:
+        return not_checked(_NAME, "No strength combination was found.", _CLAUSE)
+    use, field, force, moment = worst
+    w.step("P_r", "", force, "force", "", note="tension positive")
+    w.step("M_r", "", moment, "moment", "", note="the largest along the member")
+    w.step("M_c", "", flexure.resistance, "moment", "F", note="as for flexure")
+    w.step("sum", "", use, "", "(H1-1a), (H1-1b)", note="at most 1")
+    return w.check(
+        _NAME, _CLAUSE, demand=use, resistance=1.0, quantity="", source=field.source,
+        not_covered=_NOT_COVERED,
+    )  # fmt: skip
+
+
+def _slenderness(design: MemberDesign, w: Working) -> float:
+    section = design.section
+    radii = [math.sqrt(i / section.area) for i in (section.inertia, section.inertia_lateral)]
+    lengths = [max(design.length, design.span), lateral_length(design)]
+    x, y = (length / radius for length, radius in zip(lengths, radii, strict=True))
+    w.step("L_x / r_x", "", x, "", "E2", note="K = 1")
+    w.step("L_y / r_y", "", y, "", "E2", note="K = 1, where both flanges are held")
+    return max(x, y)
+
+
+def _slender_walls(design: MemberDesign, e: float, fy: float) -> str:
+    """Table B4.1a: E3 holds for walls that are not slender in compression."""
+    d, shape, root = plates(design.section), design.section.shape, math.sqrt(e / fy)
+    if shape == "tube":
+        slender = design.section.depth / d["wall_thickness"] > 0.11 * e / fy
+    elif shape == "hollow rectangle":
+        longest = max(design.section.depth, design.section.width)
+        slender = longest / d["wall_thickness"] - 3.0 > 1.40 * root
+    else:
+        clear = d["depth"] - 2.0 * (d["flange_thickness"] + d.get("fillet_radius", 0.0))
+        web, flange = clear / d["web_thickness"], d["width"] / (2.0 * d["flange_thickness"])
+        kc = min(max(4.0 / math.sqrt(web), 0.35), 0.76)
+        rolled = d.get("fillet_radius", 0.0) > 0.0
+        limit = 0.56 * root if rolled else 0.64 * math.sqrt(kc) * root
+        slender = web > 1.49 * root or flange > limit
+    words = "A wall of the section is slender in compression (Table B4.1a); E7 is not covered."
+    return words if slender else ""

@@ -1,0 +1,160 @@
+"""Lateral torsional buckling by EN 1993-1-1, 6.3.2: I-sections and channels between restraints."""
+
+from __future__ import annotations
+
+import math
+
+from analysis_core.checks.design import (
+    MemberDesign,
+    UnbracedSegment,
+    moment_gradient,
+    plates,
+    segments,
+)
+from analysis_core.checks.steel_en_section import is_welded, moduli, moment_resistance_of
+from analysis_core.checks.working import Check, Figures, Working
+
+IMPERFECTION = {"a": 0.21, "b": 0.34, "c": 0.49, "d": 0.76}  # Tables 6.1 and 6.3
+_NAME = "lateral torsional buckling"
+_NOT_COVERED = (
+    "Not covered: loads above the shear centre (destabilising), f of (6.58), Wagner's effect of "
+    "unequal flanges."
+)
+
+
+def check_lateral(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
+    """Return the check of the unbraced length that uses most of its resistance."""
+    if design.section.shape in ("tube", "hollow rectangle"):
+        words = "hollow sections are not susceptible"
+        return _not_susceptible(design, f, fy, class_, words)
+    found: Check | None = None
+    for field in design.fields:
+        for segment in segments(design, field):
+            check = buckling(design, f, fy, class_, segment)
+            if found is None or check.use > found.use:
+                found = check
+    words = "the compressed flange is held all along"
+    return found or _not_susceptible(design, f, fy, class_, words)
+
+
+def buckling(
+    design: MemberDesign, f: Figures, fy: float, class_: int, segment: UnbracedSegment
+) -> Check:
+    """Return the check of one unbraced segment."""
+    w = Working()
+    free = ", one end of it free" if segment.free else ""
+    w.step("L", "", segment.length, "length", "",
+           note=f"between restraints of the {segment.flange} flange{free}")  # fmt: skip
+    chi = _reduction(design, f, fy, class_, segment, w)
+    plastic, elastic = moduli(design)
+    modulus = plastic if class_ <= 2 else elastic
+    resistance = w.step(
+        "M_b,Rd", "{chi_LT} {W_y} {f_y} / {gamma_M1}", chi * modulus * fy / f["gamma_M1"],
+        "moment", "6.3.2.1(3), (6.55)", chi_LT=(chi, ""), W_y=(modulus, "section modulus"),
+        f_y=(fy, "stress"), gamma_M1=(f["gamma_M1"], ""),
+    )  # fmt: skip
+    return w.check(
+        _NAME, "EN 1993-1-1, 6.3.2", demand=segment.largest, resistance=resistance,
+        quantity="moment", x=segment.at, source=segment.source, not_covered=_NOT_COVERED,
+    )  # fmt: skip
+
+
+def reduction_between(
+    design: MemberDesign, f: Figures, fy: float, class_: int, source: str
+) -> float:
+    """Return the smallest χ_LT of the unbraced segments under the field of this source."""
+    if design.section.shape in ("tube", "hollow rectangle"):
+        return 1.0
+    found = [
+        _reduction(design, f, fy, class_, segment, Working())
+        for field in design.fields
+        if field.source == source
+        for segment in segments(design, field)
+    ]
+    return min(found, default=1.0)
+
+
+def _reduction(
+    design: MemberDesign, f: Figures, fy: float, class_: int, segment: UnbracedSegment, w: Working
+) -> float:
+    section, d = design.section, plates(design.section)
+    e, g = design.material.elastic_modulus, design.material.shear_modulus
+    g = g or e / 2.6
+    words = "a free end: none taken" if segment.free else "from the moments at the quarter points"
+    c1 = w.step("C_1", "12.5 M_max / (2.5 M_max + 3 M_2 + 4 M_3 + 3 M_4)",
+                moment_gradient(segment), "", "common practice", note=words)  # fmt: skip
+    iw, length = d.get("warping", 0.0), segment.length
+    critical = w.step(
+        "M_cr", "{C_1} π² {E} {I_z} / {L}² √({I_w}/{I_z} + {L}² {G} {I_t} / (π² {E} {I_z}))",
+        critical_moment(c1, length, e=e, g=g, iz=section.inertia_lateral, it=section.torsion,
+                        iw=iw),
+        "moment", "literature; load at the shear centre",
+        C_1=(c1, ""), E=(e, "stress"), I_z=(section.inertia_lateral, "inertia"),
+        L=(length, "length"), I_w=(iw, "warping"), G=(g, "stress"),
+        I_t=(section.torsion, "inertia"),
+    )  # fmt: skip
+    plastic, elastic = moduli(design)
+    modulus = plastic if class_ <= 2 else elastic
+    slender = w.step(
+        "λ_LT", "√({W_y} {f_y} / {M_cr})", math.sqrt(modulus * fy / critical), "", "6.3.2.2(1)",
+        W_y=(modulus, "section modulus"), f_y=(fy, "stress"), M_cr=(critical, "moment"),
+    )  # fmt: skip
+    curve, words = buckling_curve(design)
+    alpha = w.step("α_LT", "", IMPERFECTION[curve], "", "Tables 6.3, 6.5", note=words)
+    if section.shape == "I":
+        return w.step(
+            "χ_LT", "1 / (Φ_LT + √(Φ_LT² - β λ_LT²)) ≤ 1, ≤ 1/λ_LT²",
+            reduction_factor(slender, alpha, plateau=f["lambda_LT0"], beta=f["beta"]), "",
+            "6.3.2.3(1), (6.57)", note=f"plateau {f['lambda_LT0']:g}, β = {f['beta']:g}",
+        )  # fmt: skip
+    return w.step(
+        "χ_LT", "1 / (Φ_LT + √(Φ_LT² - λ_LT²)) ≤ 1",
+        reduction_factor(slender, alpha, plateau=0.2, beta=1.0), "", "6.3.2.2(1), (6.56)",
+    )  # fmt: skip
+
+
+def buckling_curve(design: MemberDesign) -> tuple[str, str]:
+    """Return the curve of lateral torsional buckling and why.
+
+    Table 6.5 for I-sections (rolled b, c; welded c, d); Table 6.4 for channels (d).
+    """
+    if design.section.shape != "I":
+        return "d", "no I-section: curve d of Table 6.4"
+    d = plates(design.section)
+    ratio = d["depth"] / d["width"]
+    welded = is_welded(design)
+    stocky, slender = ("c", "d") if welded else ("b", "c")
+    curve = stocky if ratio <= 2.0 else slender
+    return curve, f"{'welded' if welded else 'rolled'}, h/b = {ratio:.2f}: curve {curve}"
+
+
+def critical_moment(
+    c1: float, length: float, *, e: float, g: float, iz: float, it: float, iw: float
+) -> float:
+    """Return M_cr in N·m of a section bent about an axis of symmetry, loaded at its shear centre.
+
+    S. P. Timoshenko and J. M. Gere, Theory of Elastic Stability, 6.2 (from memory): both ends
+    held against turning about the member's axis and free to warp.
+    """
+    euler = math.pi**2 * e * iz / length**2
+    return c1 * euler * math.sqrt(iw / iz + g * it / euler)
+
+
+def reduction_factor(slenderness: float, alpha: float, *, plateau: float, beta: float) -> float:
+    """Return χ of 6.3.2.3, and with a plateau of 0.2 and β = 1 that of 6.3.1.2 and 6.3.2.2."""
+    if slenderness <= plateau:
+        return 1.0
+    phi = 0.5 * (1.0 + alpha * (slenderness - plateau) + beta * slenderness**2)
+    chi = 1.0 / (phi + math.sqrt(phi**2 - beta * slenderness**2))
+    return min(chi, 1.0, 1.0 / slenderness**2)
+
+
+def _not_susceptible(design: MemberDesign, f: Figures, fy: float, class_: int, words: str) -> Check:
+    w = Working()
+    w.step("λ_LT", "", 0.0, "", "6.3.2.1(2)", note=words)
+    resistance = moment_resistance_of(design, f, fy, class_, w)
+    worst = max(design.governing.sagging, design.governing.hogging, key=lambda e: abs(e.value))
+    return w.check(
+        _NAME, "EN 1993-1-1, 6.3.2.1", demand=worst.value, resistance=resistance,
+        quantity="moment", x=worst.x, source=worst.source, not_covered=f"Not needed: {words}.",
+    )  # fmt: skip
