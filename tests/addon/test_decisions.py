@@ -9,8 +9,8 @@ from analysis_core import job
 from analysis_core.errors import JobError
 from analysis_core.job_edit import entries
 from analysis_core.units import display_units
+from freecad.spanledger.opened_model import OpenedModel, job_beside
 from freecad.spanledger.present import decisions
-from freecad.spanledger.session import Session, job_beside
 
 UNITS = display_units()
 
@@ -104,46 +104,46 @@ def test_what_is_no_such_quantity_is_refused_in_a_sentence(typed):
 def test_decisions_are_written_and_undone_and_done_again(tmp_path):
     path = tmp_path / "house.ifc"
     job_beside(path).write_text("title: House  # ours\n")
-    session = Session.open(path)
-    decided = decisions.decide_support(session.text, decisions.Where("GID", "end"), "fixed")
+    opened = OpenedModel.open(path)
+    decided = decisions.decide_support(opened.text, decisions.Where("GID", "end"), "fixed")
 
-    session.decide("Joint 1 fixed", decided)
+    opened.decide("Joint 1 fixed", decided)
     assert job_beside(path).read_text() == decided
-    assert session.undo() == "Joint 1 fixed"
+    assert opened.undo() == "Joint 1 fixed"
     assert job_beside(path).read_text() == "title: House  # ours\n"
-    assert session.redo() == "Joint 1 fixed"
+    assert opened.redo() == "Joint 1 fixed"
     assert job_beside(path).read_text() == decided
-    assert session.undo()
-    assert not session.undo()
+    assert opened.undo()
+    assert not opened.undo()
 
 
 def test_a_new_decision_forgets_what_was_undone(tmp_path):
-    session = Session.open(tmp_path / "house.ifc")
-    session.decide("A", "title: A\n")
-    session.undo()
-    session.decide("B", "title: B\n")
+    opened = OpenedModel.open(tmp_path / "house.ifc")
+    opened.decide("A", "title: A\n")
+    opened.undo()
+    opened.decide("B", "title: B\n")
 
-    assert session.redo() == ""
-    assert session.text == "title: B\n"
+    assert opened.redo() == ""
+    assert opened.text == "title: B\n"
 
 
 def test_a_decision_that_cannot_be_written_changes_nothing(tmp_path):
-    session = Session.open(tmp_path / "missing" / "house.ifc")
+    opened = OpenedModel.open(tmp_path / "missing" / "house.ifc")
 
     with pytest.raises(JobError, match="was not kept"):
-        session.decide("A", "title: A\n")
+        opened.decide("A", "title: A\n")
 
-    assert session.text == ""
-    assert not session.done
+    assert opened.text == ""
+    assert not opened.done
 
 
 def test_a_decision_that_is_not_understood_changes_nothing(tmp_path):
-    session = Session.open(tmp_path / "house.ifc")
+    opened = OpenedModel.open(tmp_path / "house.ifc")
 
     with pytest.raises(JobError):
-        session.decide("A", "titel: A\n")
+        opened.decide("A", "titel: A\n")
 
-    assert not session.job_path.exists()
+    assert not opened.job_path.exists()
 
 
 def test_redistribution_is_stated_per_line_and_taken_back():

@@ -22,13 +22,13 @@ def draw():
     desk = activate()
     import demo
 
+    from freecad.spanledger.opened_model import OpenedModel
     from freecad.spanledger.present.look import VIEW
-    from freecad.spanledger.session import Session
 
     doc = FreeCAD.newDocument("Demo")
-    session = Session(Path("demo.ifc"), Path("demo.yaml"))
-    session.receive(demo.outcome())
-    desk.sessions[doc.Name] = session
+    opened = OpenedModel(Path("demo.ifc"), Path("demo.yaml"))
+    opened.receive(demo.outcome())
+    desk.opened_models[doc.Name] = opened
     desk._show_all(doc.Name)
     settle()
     box = doc.BeamLines.ViewObject.Proxy.extent()

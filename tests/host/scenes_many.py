@@ -20,14 +20,14 @@ def many_lines():
     FreeCADGui.activateWorkbench("SpanledgerWorkbench")
     start = time.perf_counter() - began
     desk = activate()
-    from freecad.spanledger.session import Session
+    from freecad.spanledger.opened_model import OpenedModel
 
     outcome = many_outcome()
     doc = FreeCAD.newDocument("Many")
     empty = frame_time()
-    session = Session(Path("many.ifc"), Path("many.yaml"))
-    session.receive(outcome)
-    desk.sessions[doc.Name] = session
+    opened = OpenedModel(Path("many.ifc"), Path("many.yaml"))
+    opened.receive(outcome)
+    desk.opened_models[doc.Name] = opened
     found = {"start": start, "empty_frame": empty, "yard": yardstick()}
     found["show"] = timed(lambda: desk._show_all(doc.Name))
     found["show_again"] = timed(lambda: desk._show_all(doc.Name))

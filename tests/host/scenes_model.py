@@ -41,7 +41,7 @@ def opened(desk, path):
     """Open a model as the user does, and wait for its lines."""
     desk.open_model(path)
     wait_until(lambda: not desk.runs.busy, what="the run")
-    assert desk.session.outcome is not None, desk.panels.running.message.text()
+    assert desk.opened.outcome is not None, desk.panels.running.message.text()
     wait_until(lambda: not desk.runs.busy_behind, what="the building")
     settle()
 
@@ -57,7 +57,7 @@ def tour():
         "lines": desk.panels.list.model.shown(),
         "states": sorted({row.state for row in desk.panels.list.model._rows}),
         "message": desk.panels.running.message.text(),
-        "shape": len(desk.session.shape.elements),
+        "shape": len(desk.opened.shape.elements),
     }
 
 
@@ -71,7 +71,7 @@ def decide():
     job = path.with_suffix(".yaml")
     before = job.read_text(encoding="utf-8")
     canvas = widget(QtWidgets.QWidget, "SpanledgerCanvas")
-    found = {"sagging": [governing(desk.session.outcome.lines[0])[0]]}
+    found = {"sagging": [governing(desk.opened.outcome.lines[0])[0]]}
 
     def pick(kind, number):
         spot = next(s for s in canvas.drawing.spots if (s.kind, s.number) == (kind, number))
@@ -84,7 +84,7 @@ def decide():
     def then():
         wait_until(lambda: not desk.runs.busy, what="the run")
         settle(0.2)
-        found["sagging"].append(governing(desk.session.outcome.lines[0])[0])
+        found["sagging"].append(governing(desk.opened.outcome.lines[0])[0])
 
     pick("joint", 0)
     picture_of_screen("decide_joint")
@@ -149,7 +149,7 @@ def post_and_reopen():
     settle()
     found["after_close"] = desk.panels.list.model.shown()
     FreeCAD.openDocument(str(document))
-    wait_until(lambda: desk.session is not None and desk.session.outcome, what="the reopened run")
+    wait_until(lambda: desk.opened is not None and desk.opened.outcome, what="the reopened run")
     wait_until(lambda: not desk.runs.busy, what="the reopened run")
     settle()
     found["after_reopen"] = desk.panels.list.model.shown()
@@ -284,13 +284,13 @@ def trouble():
     other = PICTURES / "work" / "other.ifc"
     shutil.copy(SAMPLES / "quarry_lane_analytical_ifc4.ifc", other)
     opened(desk, other)
-    found["two"] = [desk.session.path.name, len(FreeCAD.listDocuments())]
+    found["two"] = [desk.opened.path.name, len(FreeCAD.listDocuments())]
     FreeCAD.setActiveDocument(first)
     settle(0.5)
-    found["back"] = [desk.session.path.name, desk.panels.list.model.shown()]
+    found["back"] = [desk.opened.path.name, desk.panels.list.model.shown()]
 
     path.with_suffix(".yaml").write_text("title: Another\n", encoding="utf-8")
-    wait_until(lambda: desk.session.stale, what="the change to be noticed")
+    wait_until(lambda: desk.opened.stale, what="the change to be noticed")
     found["stale"] = [told(), sorted({row.state for row in desk.panels.list.model._rows})]
     FreeCADGui.runCommand("Spanledger_Balance")
     wait_until(lambda: not desk.runs.busy, what="the run")
@@ -471,7 +471,7 @@ def use():
     opened(desk, path)
     found = {}
     tree = desk.panels.list.model
-    wait_until(lambda: tree.index_of(0).isValid() and bool(desk.session.checks), what="the checks")
+    wait_until(lambda: tree.index_of(0).isValid() and bool(desk.opened.checks), what="the checks")
     settle(0.2)
     found["use"] = tree.data(tree.index_of(0).siblingAtColumn(7))
     box = widget(QtWidgets.QComboBox, "SpanledgerShadedBy")

@@ -24,7 +24,7 @@ class ShowBuilding:
     def IsActive(self) -> bool:  # noqa: N802
         from ..desk import the_desk
 
-        return the_desk().session is not None
+        return the_desk().opened is not None
 
     def Activated(self) -> None:  # noqa: N802
         from ..desk import the_desk

@@ -10,13 +10,13 @@ import FreeCAD
 import FreeCADGui
 
 from .. import document
+from ..opened_model import OpenedModel
 from ..present.checked import largest_uses
 from ..present.listing import Row, rows_of
 from ..present.moved import moved_words
 from ..present.posting import posted_words, preview
 from ..present.shades import shade_numbers, shades
 from ..qt import QtCore, QtWidgets
-from ..session import Session
 from ..texts import translate
 from ..worker import Progress
 from .panels import Panels
@@ -29,11 +29,11 @@ Change = Callable[[str], str]
 
 
 class Desk(QtCore.QObject):
-    """One per window.  Sessions are kept by document name."""
+    """One per window.  Opened models are kept by document name."""
 
     def __init__(self) -> None:
         super().__init__()
-        self.sessions: dict[str, Session] = {}
+        self.opened_models: dict[str, OpenedModel] = {}
         self.line: int | None = None
         self.spot: tuple[str, int] | None = None
         self.panels, self.picture = Panels(), Picture()
@@ -58,16 +58,16 @@ class Desk(QtCore.QObject):
         self.files.changed.connect(self._files_changed)
 
     @property
-    def session(self) -> Session | None:
+    def opened(self) -> OpenedModel | None:
         """The model of the active document."""
         active = FreeCAD.ActiveDocument
-        return self.sessions.get(active.Name) if active else None
+        return self.opened_models.get(active.Name) if active else None
 
     @property
-    def solved(self) -> Session | None:
+    def solved(self) -> OpenedModel | None:
         """The model of the active document, where it has an outcome to show."""
-        session = self.session
-        return session if session is not None and session.outcome is not None else None
+        opened = self.opened
+        return opened if opened is not None and opened.outcome is not None else None
 
     # The docks.
     def appear(self) -> None:
@@ -91,15 +91,15 @@ class Desk(QtCore.QObject):
     # What is possible now.
     def can_run(self) -> bool:
         """Whether a model is open and nothing runs."""
-        return self.session is not None and not self.runs.busy
+        return self.opened is not None and not self.runs.busy
 
     def can_undo(self) -> bool:
         """Whether a decision can be taken back."""
-        return self.can_run() and bool(self.session.done)
+        return self.can_run() and bool(self.opened.done)
 
     def can_redo(self) -> bool:
         """Whether a decision can be taken again."""
-        return self.can_run() and bool(self.session.undone)
+        return self.can_run() and bool(self.opened.undone)
 
     def can_post(self) -> bool:
         """Whether there are results to write."""
@@ -119,7 +119,7 @@ class Desk(QtCore.QObject):
         """Let the user choose another job file for the open model."""
         path, _kind = QtWidgets.QFileDialog.getOpenFileName(
             FreeCADGui.getMainWindow(), translate("Spanledger", "Use a job file"),
-            str(self.session.job_path.parent),
+            str(self.opened.job_path.parent),
             translate("Spanledger", "Job files (*.yaml *.yml)"),
         )  # fmt: skip
         if path:
@@ -127,35 +127,35 @@ class Desk(QtCore.QObject):
 
     def open_model(self, path: str | Path, job_path: str | Path | None = None) -> None:
         """Open a model in the active document, or in a new one where it holds another model."""
-        session = self._tried(lambda: Session.open(path, job_path))
-        if session is None:
+        opened = self._tried(lambda: OpenedModel.open(path, job_path))
+        if opened is None:
             return
         active = FreeCAD.ActiveDocument
-        if active is None or not self._may_hold(active, session.path):
-            active = FreeCAD.newDocument(session.path.stem)
-        self.sessions[active.Name] = session
+        if active is None or not self._may_hold(active, opened.path):
+            active = FreeCAD.newDocument(opened.path.stem)
+        self.opened_models[active.Name] = opened
         self.line = self.spot = None
         self._run(active.Name)
 
     def use_job(self, path: str | Path) -> None:
         """Go on with another job file."""
-        session = self._tried(lambda: Session.open(self.session.path, path))
-        if session is None:
+        opened = self._tried(lambda: OpenedModel.open(self.opened.path, path))
+        if opened is None:
             return
         name = FreeCAD.ActiveDocument.Name
-        session.reading, session.stamp = self.session.reading, self.session.stamp
-        session.outcome, session.shape = self.session.outcome, self.session.shape
-        self.sessions[name] = session
+        opened.reading, opened.stamp = self.opened.reading, self.opened.stamp
+        opened.outcome, opened.shape = self.opened.outcome, self.opened.shape
+        self.opened_models[name] = opened
         obj = document.find_beam_lines(FreeCAD.ActiveDocument)
         if obj is not None:
-            obj.JobFile = str(session.job_path)
+            obj.JobFile = str(opened.job_path)
         self._run(name)
 
     def ask_for_earlier(self) -> None:
         """Let the user choose an earlier revision, and compare."""
         path, _kind = QtWidgets.QFileDialog.getOpenFileName(
             FreeCADGui.getMainWindow(), translate("Spanledger", "Earlier revision"),
-            str(self.session.path.parent),
+            str(self.opened.path.parent),
             translate("Spanledger", "IFC models (*.ifc *.ifczip)"),
         )  # fmt: skip
         if path:
@@ -163,25 +163,25 @@ class Desk(QtCore.QObject):
 
     def compare(self, earlier: str | Path) -> None:
         """Compare with an earlier revision of the model."""
-        session, name = self.session, FreeCAD.ActiveDocument.Name
-        settings = session.settings
+        opened, name = self.opened, FreeCAD.ActiveDocument.Name
+        settings = opened.settings
 
         def task(progress: Progress) -> Any:
-            return session.compare(Path(earlier), settings, progress)
+            return opened.compare(Path(earlier), settings, progress)
 
         def done(found: Any) -> None:
-            if self.sessions.get(name) is session:
-                session.take_compared(found)
+            if self.opened_models.get(name) is opened:
+                opened.take_compared(found)
                 self._show_all(name)
-                self.panels.show_changes(found, session)
+                self.panels.show_changes(found, opened)
                 self._look_closer(name, found.after, settings)
 
         self.runs.start(task, done)
 
     def run_again(self) -> None:
         """Read the model and its job file again and balance the lines."""
-        session = self.session
-        if self._tried(lambda: session.read_again() or True):
+        opened = self.opened
+        if self._tried(lambda: opened.read_again() or True):
             self._run(FreeCAD.ActiveDocument.Name)
 
     def document_changed(self) -> None:
@@ -192,7 +192,7 @@ class Desk(QtCore.QObject):
         if self.solved is not None:
             self.line = self.spot = None
             self._show_all(active.Name)
-        elif self.session is None:
+        elif self.opened is None:
             self.line = self.spot = None
             self.panels.clear()
             obj = document.find_beam_lines(active)
@@ -201,7 +201,7 @@ class Desk(QtCore.QObject):
 
     def forget(self, name: str) -> None:
         """A document was closed: stop its work and forget its model."""
-        if self.sessions.pop(name, None) is not None:
+        if self.opened_models.pop(name, None) is not None:
             self.runs.cancel()
             self.runs.cancel_behind()
         self.picture.forget(name)
@@ -211,25 +211,25 @@ class Desk(QtCore.QObject):
     # Decisions.
     def decide(self, title: str, change: Change) -> None:
         """Take a decision: a change of the job file's text; and balance again."""
-        session = self.session
-        self._decide(lambda: session.decide(title, change(session.text)), title)
+        opened = self.opened
+        self._decide(lambda: opened.decide(title, change(opened.text)), title)
 
     def undo(self) -> None:
         """Take the last decision back."""
-        self._decide(self.session.undo, translate("Spanledger", "Undone"))
+        self._decide(self.opened.undo, translate("Spanledger", "Undone"))
 
     def redo(self) -> None:
         """Take a decision again."""
-        self._decide(self.session.redo, translate("Spanledger", "Done again"))
+        self._decide(self.opened.redo, translate("Spanledger", "Done again"))
 
     # Posting.
     def ask_to_post(self) -> None:
         """Show what will be written, and write it when the user says so."""
         from .post_dialog import PostDialog
 
-        session = self.session
-        shown = preview(session.outcome, session.units)
-        self.post_dialog = PostDialog(session.path, shown, FreeCADGui.getMainWindow())
+        opened = self.opened
+        shown = preview(opened.outcome, opened.units)
+        self.post_dialog = PostDialog(opened.path, shown, FreeCADGui.getMainWindow())
         self.post_dialog.wanted.connect(self.post)
         self.post_dialog.show()
 
@@ -237,16 +237,16 @@ class Desk(QtCore.QObject):
         """Write the results into a copy of the model, or into the model itself."""
         from analysis_core import pipeline
 
-        session, name = self.session, FreeCAD.ActiveDocument.Name
-        outcome = session.outcome
+        opened, name = self.opened, FreeCAD.ActiveDocument.Name
+        outcome = opened.outcome
 
         def task(progress: Progress) -> Any:
-            return pipeline.post(outcome, session.path, target, progress=progress)
+            return pipeline.post(outcome, opened.path, target, progress=progress)
 
         def done(report: Any) -> None:
-            session.take_posted(outcome, Path(target))
+            opened.take_posted(outcome, Path(target))
             self._watch()
-            if self.sessions.get(name) is session:
+            if self.opened_models.get(name) is opened:
                 self._show_states(name)
             self.tell(posted_words(report, str(target)), problem=False)
 
@@ -293,8 +293,8 @@ class Desk(QtCore.QObject):
     def toggle_building(self) -> None:
         """Show the building faintly, or hide it."""
         self.picture.building_shown = not self.picture.building_shown
-        if self.session is not None:
-            self.picture.show_building(FreeCAD.ActiveDocument.Name, self.session)
+        if self.opened is not None:
+            self.picture.show_building(FreeCAD.ActiveDocument.Name, self.opened)
 
     def tell(self, message: str, *, problem: bool = True) -> None:
         """Show a sentence, without stopping the user."""
@@ -304,62 +304,62 @@ class Desk(QtCore.QObject):
 
     # Inside.
     def _run(self, name: str, title: str = "") -> None:
-        session = self.sessions[name]
-        settings = session.settings
+        opened = self.opened_models[name]
+        settings = opened.settings
 
         def task(progress: Progress) -> Any:
-            return session.run(settings, progress)
+            return opened.run(settings, progress)
 
         def done(outcome: Any) -> None:
-            if self.sessions.get(name) is not session:
+            if self.opened_models.get(name) is not opened:
                 return  # the document was closed meanwhile
-            session.receive(outcome)
+            opened.receive(outcome)
             self._show_all(name)
             self._watch()
-            self._tell_what_moved(session, title)
+            self._tell_what_moved(opened, title)
             self._look_closer(name, outcome, settings)
 
         self.runs.start(task, done)
 
     def _look_closer(self, name: str, outcome: Any, settings: Any) -> None:
         """Check members, and make the bodies of the building, behind everything else."""
-        session = self.sessions[name]
+        opened = self.opened_models[name]
 
         def task(progress: Progress) -> Any:
-            checks = session.check(outcome, settings, progress)
-            return checks, session.shape or session.building(progress)
+            checks = opened.check(outcome, settings, progress)
+            return checks, opened.shape or opened.building(progress)
 
         def done(found: Any) -> None:
-            if self.sessions.get(name) is not session or session.outcome is not outcome:
+            if self.opened_models.get(name) is not opened or opened.outcome is not outcome:
                 return
-            session.checks, session.shape = found
-            self.picture.show_building(name, session)
+            opened.checks, opened.shape = found
+            self.picture.show_building(name, opened)
             self._show_states(name)
-            if self.session is session and self.line is not None:
-                self.panels.show_spot(session, self.line, self.spot)
+            if self.opened is opened and self.line is not None:
+                self.panels.show_spot(opened, self.line, self.spot)
 
         self.runs.start_behind(task, done)
 
     def _show_all(self, name: str) -> None:
-        session = self.sessions[name]
-        rows = self._rows(session)
-        self.picture.show(name, session, [row.state for row in rows])
-        self.panels.show_session(session, rows)
+        opened = self.opened_models[name]
+        rows = self._rows(opened)
+        self.picture.show(name, opened, [row.state for row in rows])
+        self.panels.show_session(opened, rows)
         self._show_diagram()
-        count = len(session.outcome.lines)
+        count = len(opened.outcome.lines)
         if self.line is None or self.line >= count:
             self.line = 0 if count else None
         self._shade()
         self.choose_line(self.line)
-        self.picture.show_building(name, session)
+        self.picture.show_building(name, opened)
 
     def _shade(self) -> None:
         """Tell the lines of the active model apart in the 3D view as is asked for."""
         way = self.panels.strip.shaded_by.currentData()
         self.panels.strip.legend.show_shades(shades(way))
-        session = self.solved
-        if session is not None:
-            numbers = shade_numbers(way, self._rows(session), session.outcome, session.previous)
+        opened = self.solved
+        if opened is not None:
+            numbers = shade_numbers(way, self._rows(opened), opened.outcome, opened.previous)
             self.picture.shade(FreeCAD.ActiveDocument.Name, way, numbers)
 
     def _show_view(self) -> None:
@@ -382,24 +382,24 @@ class Desk(QtCore.QObject):
             self.picture.show_diagram(FreeCAD.ActiveDocument.Name, self.solved, view, quantity)
 
     def _show_states(self, name: str) -> None:
-        rows = self._rows(self.sessions[name])
+        rows = self._rows(self.opened_models[name])
         self.picture.show_states(name, [row.state for row in rows])
         if FreeCAD.ActiveDocument is not None and FreeCAD.ActiveDocument.Name == name:
-            self.panels.list.show_rows(rows, self.sessions[name].units)
+            self.panels.list.show_rows(rows, self.opened_models[name].units)
             self._shade()
 
-    def _rows(self, session: Session) -> list[Row]:
+    def _rows(self, opened: OpenedModel) -> list[Row]:
         return rows_of(
-            session.outcome,
-            session.units,
-            stale=session.stale,
-            posted=session.posted,
-            in_file=session.in_file,
-            uses=largest_uses(session.checks),
+            opened.outcome,
+            opened.units,
+            stale=opened.stale,
+            posted=opened.posted,
+            in_file=opened.in_file,
+            uses=largest_uses(opened.checks),
         )
 
     def _decide(self, change: Callable[[], Any], title: str) -> None:
-        if self.session is None or self.runs.busy:
+        if self.opened is None or self.runs.busy:
             self.tell(translate("Spanledger", "Something is still running; wait, or stop it."))
         elif self._tried(lambda: (change(),)):
             self._run(FreeCAD.ActiveDocument.Name, title)
@@ -416,7 +416,7 @@ class Desk(QtCore.QObject):
 
     def _may_hold(self, doc: Any, path: Path) -> bool:
         """Whether a model may be opened in a document: it holds none, or this one."""
-        if doc.Name in self.sessions:
+        if doc.Name in self.opened_models:
             return False
         obj = document.find_beam_lines(doc)
         return obj is None or not obj.IfcFile or Path(obj.IfcFile) == path
@@ -435,26 +435,26 @@ class Desk(QtCore.QObject):
         self.tell(text.format(path=path))
 
     def _watch(self) -> None:
-        self.files.watch(p for s in self.sessions.values() for p in (s.path, s.job_path))
+        self.files.watch(p for s in self.opened_models.values() for p in (s.path, s.job_path))
 
     def _files_changed(self) -> None:
         """A model or a job file was written by somebody else: its lines are stale."""
         if self.runs.busy:
             return
-        for name, session in self.sessions.items():
-            if session.outcome is not None and not session.stale and session.changed_on_disk():
-                session.stale = True
+        for name, opened in self.opened_models.items():
+            if opened.outcome is not None and not opened.stale and opened.changed_on_disk():
+                opened.stale = True
                 text = translate(
                     "Spanledger", "'{name}' or its job file changed; balance its lines again."
                 )
-                self.tell(text.format(name=session.path.name))
+                self.tell(text.format(name=opened.path.name))
                 self._show_states(name)
         self._watch()
 
-    def _tell_what_moved(self, session: Session, title: str) -> None:
-        if session.previous is None or self.line is None:
+    def _tell_what_moved(self, opened: OpenedModel, title: str) -> None:
+        if opened.previous is None or self.line is None:
             self.panels.running.clear()
             return
-        mark = session.outcome.lines[self.line].line.mark
-        words = moved_words(session.previous, session.outcome, mark, session.units)
+        mark = opened.outcome.lines[self.line].line.mark
+        words = moved_words(opened.previous, opened.outcome, mark, opened.units)
         self.tell(f"{title}. {words}" if title else words, problem=False)

@@ -8,6 +8,7 @@ import FreeCADGui
 
 from analysis_core.units import display_units
 
+from ..opened_model import OpenedModel
 from ..present.changes import change_rows, summary
 from ..present.diagrams import views_of
 from ..present.findings import finding_rows
@@ -15,7 +16,6 @@ from ..present.listing import Row
 from ..present.load_path import bearing_rows, paths_at_joint, paths_on_member
 from ..present.strip import strip_of
 from ..qt import Qt, QtWidgets
-from ..session import Session
 from ..texts import translate
 from .bearings_list import BearingsList
 from .changes_list import ChangesList
@@ -29,7 +29,7 @@ Spot = tuple[str, int]
 
 
 class Panels:
-    """Shows sessions; decides nothing."""
+    """Shows opened_models; decides nothing."""
 
     def __init__(self) -> None:
         window = FreeCADGui.getMainWindow()
@@ -44,7 +44,7 @@ class Panels:
         self.bearings = BearingsList()
         self.tabs.addTab(self.bearings, translate("Spanledger", "Reactions"))
         self.changes = ChangesList()  # becomes a tab once revisions are compared
-        self._session: Session | None = None
+        self._session: OpenedModel | None = None
         self.tabs.currentChanged.connect(lambda _index: self._show_bearings())
         self.list_dock = _dock(
             window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
@@ -85,40 +85,40 @@ class Panels:
         for dock in self._docks:
             dock.hide()
 
-    def show_session(self, session: Session, rows: list[Row]) -> None:
+    def show_session(self, opened: OpenedModel, rows: list[Row]) -> None:
         """Show the lines and findings of a model."""
-        self.strip.show_views(views_of(session.outcome))
-        self.list.show_rows(rows, session.units)
-        found = finding_rows(session.outcome)
+        self.strip.show_views(views_of(opened.outcome))
+        self.list.show_rows(rows, opened.units)
+        found = finding_rows(opened.outcome)
         self.findings.show_rows(found)
-        self._session = session
+        self._session = opened
         self._show_bearings()
         title = translate("Spanledger", "Findings ({count})").format(count=len(found))
         self.tabs.setTabText(1, title)
 
     def _show_bearings(self) -> None:
         """Fill the list of reactions when it is looked at; it may hold tens of thousands."""
-        session = self._session
-        if session is not None and self.tabs.currentWidget() is self.bearings:
-            self.bearings.show_rows(bearing_rows(session.outcome, session.units), session.units)
+        opened = self._session
+        if opened is not None and self.tabs.currentWidget() is self.bearings:
+            self.bearings.show_rows(bearing_rows(opened.outcome, opened.units), opened.units)
 
-    def show_changes(self, found: Any, session: Session) -> None:
+    def show_changes(self, found: Any, opened: OpenedModel) -> None:
         """Show what changed since an earlier revision."""
-        self.changes.show_rows(change_rows(found, session.units), summary(found))
+        self.changes.show_rows(change_rows(found, opened.units), summary(found))
         if self.tabs.indexOf(self.changes) < 0:
             self.tabs.addTab(self.changes, translate("Spanledger", "Changes"))
         self.tabs.setCurrentWidget(self.changes)
 
-    def show_line(self, session: Session, line: int, spot: Spot | None) -> None:
+    def show_line(self, opened: OpenedModel, line: int, spot: Spot | None) -> None:
         """Show one line, and what is chosen of it."""
         view = self.strip.current_view()
         if view is None:
             return
-        result = session.outcome.lines[line]
-        strip = strip_of(result, view, session.units, before=_before(session, result.line.mark))
-        self.strip.show_strip(strip, session.units, spot)
-        self.show_spot(session, line, spot)
-        self.show_record(session, line)
+        result = opened.outcome.lines[line]
+        strip = strip_of(result, view, opened.units, before=_before(opened, result.line.mark))
+        self.strip.show_strip(strip, opened.units, spot)
+        self.show_spot(opened, line, spot)
+        self.show_record(opened, line)
 
     def show_no_line(self) -> None:
         """Show that no line is chosen."""
@@ -126,37 +126,37 @@ class Panels:
         self.strip.inspector.clear()
         self.record.show_record("")
 
-    def show_record(self, session: Session, line: int) -> None:
+    def show_record(self, opened: OpenedModel, line: int) -> None:
         """Show how the moments of a line were distributed, where that is looked at."""
         view = self.strip.current_view()
         if view is None or not self.record_dock.isVisible():
             return
         from ..present.distribution import recorded
 
-        result, order = session.outcome.lines[line], self.record.chosen_order()
-        self.record.show_record(recorded(result, view, session.units, order))
+        result, order = opened.outcome.lines[line], self.record.chosen_order()
+        self.record.show_record(recorded(result, view, opened.units, order))
 
-    def show_spot(self, session: Session, line: int, spot: Spot | None) -> None:
+    def show_spot(self, opened: OpenedModel, line: int, spot: Spot | None) -> None:
         """Show a joint, a span or an action in the inspector; None shows the line."""
         self.strip.canvas.choose(spot)
         view = self.strip.current_view()
-        result, outcome, units = session.outcome.lines[line], session.outcome, session.units
+        result, outcome, units = opened.outcome.lines[line], opened.outcome, opened.units
         inspector = self.strip.inspector
         kind, number = spot or ("", 0)
         if kind == "joint" and number < len(result.line.joints):
             inspector.show_joint(result, number, view, outcome, units)
             inspector.show_paths(paths_at_joint(outcome, line, number))
         elif kind == "member" and number < len(result.line.members):
-            checks = session.checks.get(result.line.mark, ())
+            checks = opened.checks.get(result.line.mark, ())
             inspector.show_member(result, number, outcome, checks, units)
             inspector.show_paths(paths_on_member(outcome, line, number, units))
         elif kind == "action" and number < len(result.line.actions):
             action = result.line.actions[number]
             shown = self.strip.canvas.strip.actions
             words = next((a.words for a in shown if a.action is action), "")
-            inspector.show_action(result, number, words, session.text, units)
+            inspector.show_action(result, number, words, opened.text, units)
         else:
-            inspector.show_line(result, outcome, session.settings, units)
+            inspector.show_line(result, outcome, opened.settings, units)
 
     def clear(self) -> None:
         """Show no model."""
@@ -172,10 +172,10 @@ class Panels:
         self.show_no_line()
 
 
-def _before(session: Session, mark: str) -> Any:
-    if session.previous is None:
+def _before(opened: OpenedModel, mark: str) -> Any:
+    if opened.previous is None:
         return None
-    return next((r for r in session.previous.lines if r.line.mark == mark), None)
+    return next((r for r in opened.previous.lines if r.line.mark == mark), None)
 
 
 def _stacked(*widgets: Any) -> Any:

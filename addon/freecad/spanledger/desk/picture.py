@@ -8,47 +8,47 @@ import FreeCAD
 import FreeCADGui
 
 from .. import document
+from ..opened_model import OpenedModel
 from ..present.diagrams import View, ordinates_of
 from ..present.scene import Scene, drawn_stations
 from ..present.shades import shades
 from ..qt import QtCore
-from ..session import Session
 from ..texts import translate
 
 
 class Picture:
-    """Keeps the document objects in step with the sessions."""
+    """Keeps the document objects in step with the opened_models."""
 
     def __init__(self) -> None:
         self.building_shown = True
         self._scenes: dict[str, Scene] = {}
         self._shapes: dict[str, Any] = {}  # a building as large as a town is not sent twice
 
-    def show(self, name: str, session: Session, states: list[str]) -> None:
+    def show(self, name: str, opened: OpenedModel, states: list[str]) -> None:
         """Draw the lines of a model into its document, in one step where it is the first."""
         doc = FreeCAD.getDocument(name)
         obj = document.find_beam_lines(doc)
         if obj is not None:
-            self._scenes[name] = document.show_outcome(obj, session.outcome, states)
+            self._scenes[name] = document.show_outcome(obj, opened.outcome, states)
             return
         self._shapes.pop(name, None)
         doc.openTransaction(translate("Spanledger", "Beam lines"))
         try:
-            obj = _add_object(doc, session)
-            self._scenes[name] = document.show_outcome(obj, session.outcome, states)
+            obj = _add_object(doc, opened)
+            self._scenes[name] = document.show_outcome(obj, opened.outcome, states)
         except Exception:
             doc.abortTransaction()
             raise
         doc.commitTransaction()
         _look_at_all(doc)
 
-    def show_diagram(self, name: str, session: Session, view: View, quantity: str) -> None:
+    def show_diagram(self, name: str, opened: OpenedModel, view: View, quantity: str) -> None:
         """Draw a quantity along all lines."""
         obj = document.find_beam_lines(FreeCAD.getDocument(name))
         if obj is not None and name in self._scenes:
             scene = self._scenes[name]
             stations = drawn_stations(len(scene.ends))
-            ordinates = ordinates_of(session.outcome.lines, view, quantity, stations)
+            ordinates = ordinates_of(opened.outcome.lines, view, quantity, stations)
             document.show_diagram(obj, scene, ordinates)
 
     def shade(self, name: str, way: str, numbers: list[int]) -> None:
@@ -63,10 +63,10 @@ class Picture:
         if obj is not None:
             obj.States = states
 
-    def show_building(self, name: str, session: Session) -> None:
+    def show_building(self, name: str, opened: OpenedModel) -> None:
         """Draw the building faintly, or not where it is switched off."""
         obj = document.find_beam_lines(FreeCAD.getDocument(name))
-        shape = session.shape if self.building_shown else None
+        shape = opened.shape if self.building_shown else None
         if obj is not None and self._shapes.get(name) is not shape:
             self._shapes[name] = shape
             obj.ViewObject.Proxy.show_building(shape)
@@ -77,11 +77,11 @@ class Picture:
         self._shapes.pop(name, None)
 
 
-def _add_object(doc: Any, session: Session) -> Any:
+def _add_object(doc: Any, opened: OpenedModel) -> Any:
     from ..draw.view import BeamLinesView
 
     obj = document.add_beam_lines(doc)
-    obj.IfcFile, obj.JobFile = str(session.path), str(session.job_path)
+    obj.IfcFile, obj.JobFile = str(opened.path), str(opened.job_path)
     BeamLinesView(obj.ViewObject)
     obj.ViewObject.DisplayMode = obj.ViewObject.Proxy.getDefaultDisplayMode()
     return obj

@@ -39,7 +39,7 @@ class Decision:
 
 
 @dataclass(slots=True)
-class Session:
+class OpenedModel:
     """The state of one open model."""
 
     path: Path
@@ -65,7 +65,7 @@ class Session:
     undone: list[Decision] = field(default_factory=list)
 
     @classmethod
-    def open(cls, path: str | Path, job_path: str | Path | None = None) -> Session:
+    def open(cls, path: str | Path, job_path: str | Path | None = None) -> OpenedModel:
         """Start on a model, with the job file beside it where there is one.
 
         Raises JobError where the job file cannot be read or understood.
