@@ -64,7 +64,7 @@ _KINDS = (
     ),
     ("masonry", r"masonry|mauerwerk|brick|ziegel|kalksand|blockwork|porenbeton|aerated|gasbeton"),
     ("glulam", r"glulam|glued.?lam|brettschicht|\bbsh\b|lamell|limtr|\bgl ?\d\d|glue-?lam"),
-    ("lvl", r"\blvl\b|laminated veneer|furnierschicht|kerto"),
+    ("lvl", r"\blvl\b|laminated veneer|furnierschicht"),
     (
         "hardwood",
         r"hardwood|laubholz|\boak\b|eiche|beech|buche|chêne|\bd ?(?:18|24|30|35|40|50|60|70)\b",
