@@ -9,9 +9,11 @@ import numpy as np
 import pytest
 from lopsided_line import line_of, outcome_for
 from posting_makers import BEAM, COLUMN_A, COLUMN_B, SCHEMAS, outcome_of, small_model, span_result
+from scipy.integrate import quad
 
 from analysis_core import pipeline
 from analysis_core.ifc import writer
+from analysis_core.ifc.model_bars import bars_of
 from analysis_core.job import load
 from analysis_core.model import DistributedForce, ImposedCurvature, Piece, Support
 from analysis_core.settings import Analysis, Settings
@@ -148,6 +150,19 @@ def test_what_cannot_be_said_exactly_is_said_to_be_so(tmp_path):
         "action-approximated", "curvature-not-written", "rigidity-in-steps"
     }  # fmt: skip
     assert all(f.line == "X-1" for f in report.findings)
+
+
+def test_a_tapering_member_keeps_its_flexibility():
+    """Rigidity falling to an eighth, as the cube of the depth: its bars turn as much."""
+    piece = Piece(5.0, (200.0, -100.0), 3.0)
+    member = replace(line_of().members[0], pieces=(piece,))
+    bars = bars_of(member)
+    exact, _ = quad(lambda u: 5.0 / piece.flexural_at(u), 0.0, 1.0)
+
+    assert len(bars) > 4
+    assert sum(bar.length for bar in bars) == pytest.approx(5.0, rel=1e-15)
+    # The midpoint rule within each bar: error of the order of (1 / bars / 16) squared.
+    assert sum(bar.length / bar.flexural for bar in bars) == pytest.approx(exact, rel=1e-4)
 
 
 def test_it_is_replaced_and_not_doubled_and_stays_where_it_is_not_asked_for_again(tmp_path):

@@ -85,6 +85,19 @@ def test_quantities_without_a_unit_in_the_model_carry_their_si_unit(tmp_path, sc
     assert table.DefinedUnit == moment.Unit
 
 
+def test_a_moment_without_a_unit_is_in_si_whatever_force_and_length_are_in(tmp_path):
+    source = tmp_path / "model.ifc"
+    metres = small_model(torque=False).replace(b".MILLI.,.METRE.", b"$,.METRE.")
+    source.write_bytes(metres)
+    writer.post(source, source, outcome_of(span_result(BEAM)))
+    model = ifcopenshell.open(str(source))
+    found = properties(model, BEAM, "Spanledger_Effects")
+
+    assert found["SaggingMoment"].NominalValue.wrappedValue == pytest.approx(81e3)  # N·m
+    assert found["Shear"].NominalValue.wrappedValue == pytest.approx(54.0)  # kN
+    assert found["SaggingMomentPosition"].NominalValue.wrappedValue == 3.0
+
+
 def test_a_model_without_any_units_gets_all_of_them_stated(tmp_path):
     model, _ = posted(tmp_path, outcome_of(span_result(BEAM)), units=False)
     found = properties(model, BEAM, "Spanledger_Effects")
@@ -210,6 +223,7 @@ def test_positions_of_a_reversed_member_count_from_the_start_of_its_element(tmp_
     found = properties(model, BEAM, "Spanledger_Effects")
     assert found["Shear"].NominalValue.wrappedValue == pytest.approx(54.0)
     assert found["ShearPosition"].NominalValue.wrappedValue == 6000.0
+    assert found["SaggingMomentPosition"].NominalValue.wrappedValue == 3000.0
 
 
 HOSTILE = "B'1\\ 'é漢😀\r\n ENDSEC; /* */ #30=IFCWALL(); */"
