@@ -258,7 +258,11 @@ def _first(found: _Found, scale: Floats) -> tuple[Integers, Integers, Floats]:
     member, row, segment, t = (
         getattr(found, name)[good] for name in ("member", "row", "segment", "t")
     )
-    order = np.lexsort((t, segment, row, member))
-    _, first = np.unique(member[order], return_index=True)
-    pick = order[first]
+    if len(member) == len(scale) and np.bincount(member).max() == 1:
+        pick = np.empty(len(scale), dtype=np.int64)
+        pick[member] = np.arange(len(member))
+    else:
+        order = np.lexsort((t, segment, row, member))
+        _, first = np.unique(member[order], return_index=True)
+        pick = order[first]
     return row[pick], segment[pick], t[pick]

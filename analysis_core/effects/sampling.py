@@ -49,8 +49,7 @@ def at_places(
     next run.
     """
     local = polynomials[:, :, :, None]
-    nearest = 0.0 if samples % 2 else 1.0 / (samples - 1)
-    distance = np.linspace(nearest, 1.0, (samples + 1) // 2)
+    distance = _distances(samples)
     step = max(1, NUMBERS // max(1, polynomials[0].size))
     kind, size = polynomials.shape[1:3], polynomials.shape[3]
     half = samples // 2
@@ -62,14 +61,56 @@ def at_places(
         if len(local) == 1:
             o[...] = 0.0
         else:
-            _horner(local[1::2], u * u, o)
-            o *= u
+            _odd(local[1::2], u, u * u, o)
         np.add(e, o, out=a)
         yield slice(half + first, half + first + len(u)), a
         np.subtract(e, o, out=e)
         last = samples - 1 - half - first
         # The mirrored places run the other way.
         yield slice(last, last - len(u) if last >= len(u) else None, -1), e
+
+
+def each_row(
+    polynomials: Floats, samples: int, workspace: Workspace
+) -> Iterator[tuple[int, int, Floats]]:
+    """Yield segment, row and the values (S, B) of each of the polynomials (P, K, N, B).
+
+    To the last digit those of ``at_places``; quicker for many members, since little memory is in
+    use at a time.  The array is used again for the next row.
+    """
+    _, segments, rows, size = polynomials.shape
+    u = _distances(samples)[:, None]
+    square = u * u
+    half = samples // 2
+    values = workspace.array("values", (samples, size))
+    even, odd = (workspace.array(name, (len(u), size)) for name in ("even", "odd"))
+    above = values[half:]
+    below = values[half::-1] if samples % 2 else values[half - 1 :: -1]
+    for k in range(segments):
+        for n in range(rows):
+            row = polynomials[:, k, n]
+            _horner(row[0::2], square, even)
+            if len(row) == 1:
+                odd[...] = 0.0
+            else:
+                _odd(row[1::2], u, square, odd)
+            np.add(even, odd, out=above)
+            np.subtract(even, odd, out=below)
+            yield k, n, values
+
+
+def _distances(samples: int) -> Floats:
+    """Places from the middle to the end, u up to 1."""
+    nearest = 0.0 if samples % 2 else 1.0 / (samples - 1)
+    return np.linspace(nearest, 1.0, (samples + 1) // 2)
+
+
+def _odd(coefficients: Floats, u: Floats, square: Floats, out: Floats) -> None:
+    if len(coefficients) == 1:
+        np.multiply(coefficients[0], u, out=out)
+    else:
+        _horner(coefficients, square, out)
+        out *= u
 
 
 def _horner(coefficients: Floats, x: Floats, out: Floats) -> None:

@@ -8,17 +8,27 @@ out, whatever they do between the places.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.factors import FactorTable
 from analysis_core.effects.polynomials import derivative, evaluate
-from analysis_core.effects.sampling import NUMBERS, Workspace, at_places, both, centred, combined
+from analysis_core.effects.sampling import (
+    NUMBERS,
+    Workspace,
+    at_places,
+    both,
+    centred,
+    combined,
+    each_row,
+)
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 
+_MANY = 128  # from so many members on, rows are taken one by one
 EQUAL = 1e-12  # of the largest value on the member: closer values count as the same
 
 
@@ -45,11 +55,13 @@ class Survey:
 
 def survey(coefficients: Floats, table: FactorTable, samples: int) -> Survey:
     """Survey polynomials (P, K, C, B) of the parts at ``samples`` places per segment."""
-    _, segments, count, size = coefficients.shape
+    degree, segments, count, size = coefficients.shape
     rows = len(table.names)
     top, bottom = (np.empty((samples, segments, size)) for _ in range(2))
     found: tuple[list[Stretches], list[Stretches]] = ([], [])
     width = max(32, NUMBERS // (segments * max(rows, count)))
+    if table.fixed:
+        width = min(1024, max(width, _MANY, 10 * NUMBERS // (degree * segments * rows)))
     workspace = Workspace()
     look = _fixed if table.fixed else _varied
     for first in range(0, size, width):
@@ -68,79 +80,128 @@ def _fixed(
     """Each row is one polynomial per segment."""
     polynomials = combined(local, table.high, workspace)
     curved = len(polynomials) > 3
-    if curved:
-        over, under = _margins(polynomials, len(top))
-        highest, lowest = _nothing(polynomials)
-    for places, values in at_places(polynomials, len(top), workspace):
-        np.maximum.reduce(values, axis=1, out=top[places].swapaxes(0, 1))
-        np.minimum.reduce(values, axis=1, out=bottom[places].swapaxes(0, 1))
-        if curved:
-            _inner(values, places, len(top), 3.0 * over, 3.0 * under, highest, lowest)
+    if local.shape[3] < _MANY:
+        reach = _by_places(polynomials, top, bottom, workspace, curved=curved)
+    else:
+        reach = _by_rows(polynomials, top, bottom, workspace, curved=curved)
     scale = np.maximum(np.abs(top), np.abs(bottom)).max(axis=(0, 1))
-    if not curved:
+    if reach is None:
         high, low = _closed(polynomials)
         return _first_to_reach(high, scale), _first_to_reach(-low, scale)
     return (
-        _pruned(polynomials, highest + over, over, top, scale),
-        _pruned(-polynomials, under - lowest, under, -bottom, scale),
+        _pruned(polynomials, 1.0, reach.highest, reach.over, top, scale),
+        _pruned(polynomials, -1.0, -reach.lowest, reach.under, -bottom, scale),
     )
 
 
-def _inner(
-    values: Floats,
-    places: slice,
-    samples: int,
-    over: Floats,
-    under: Floats,
-    highest: Floats,
-    lowest: Floats,
-) -> None:
-    """Update the extremes of each row over the places between the ends.
+@dataclass(frozen=True, slots=True, eq=False)
+class _Reach:
+    """How far rows may go between the places, ends left out, and the margins in it (K, N, B)."""
+
+    highest: Floats
+    lowest: Floats
+    over: Floats
+    under: Floats
+
+
+def _by_places(
+    polynomials: Floats, top: Floats, bottom: Floats, workspace: Workspace, *, curved: bool
+) -> _Reach | None:
+    samples = len(top)
+    reach = _empty_reach(polynomials, samples) if curved else None
+    for places, values in at_places(polynomials, samples, workspace):
+        np.maximum.reduce(values, axis=1, out=top[places].swapaxes(0, 1))
+        np.minimum.reduce(values, axis=1, out=bottom[places].swapaxes(0, 1))
+        if reach is None:
+            continue
+        for j, place in enumerate(range(samples)[places]):
+            if 0 < place < samples - 1:
+                beside = place in (1, samples - 2)
+                _extend(reach, np.s_[:], values[:, :, j], beside=beside)
+    return None if reach is None else _with_margins(reach)
+
+
+def _by_rows(
+    polynomials: Floats, top: Floats, bottom: Floats, workspace: Workspace, *, curved: bool
+) -> _Reach | None:
+    samples = len(top)
+    reach = _empty_reach(polynomials, samples) if curved else None
+    high, low = (workspace.array(name, (samples, top.shape[2])) for name in ("high", "low"))
+    for k, n, values in each_row(polynomials, samples, workspace):
+        if n == 0:
+            high[...], low[...] = values, values
+        else:
+            np.maximum(high, values, out=high)
+            np.minimum(low, values, out=low)
+        if reach is not None:
+            inner = values[2:-2]
+            reach.highest[k, n] = np.maximum.reduce(inner, axis=0, initial=-np.inf)
+            reach.lowest[k, n] = np.minimum.reduce(inner, axis=0, initial=np.inf)
+            for place in (1, samples - 2):
+                _extend(reach, np.s_[k, n], values[place], beside=True)
+        if n == polynomials.shape[2] - 1:
+            top[:, k], bottom[:, k] = high, low
+    return None if reach is None else _with_margins(reach)
+
+
+def _empty_reach(polynomials: Floats, samples: int) -> _Reach:
+    shape = polynomials.shape[1:]
+    over, under = _margins(polynomials, samples)
+    return _Reach(np.full(shape, -np.inf), np.full(shape, np.inf), over, under)
+
+
+def _extend(reach: _Reach, where: Any, value: Floats, *, beside: bool) -> None:
+    """Take a place into account.
 
     Beside an end a row may exceed the end by up to four margins less the fall, elsewhere by one.
     """
-    for j, place in enumerate(range(samples)[places]):
-        if place in (0, samples - 1):
-            continue
-        value = values[:, :, j]
-        if place in (1, samples - 2):
-            np.maximum(highest, value + over, out=highest)
-            np.minimum(lowest, value - under, out=lowest)
-        else:
-            np.maximum(highest, value, out=highest)
-            np.minimum(lowest, value, out=lowest)
+    high, low = reach.highest[where], reach.lowest[where]
+    more = 3.0 if beside else 0.0
+    np.maximum(high, value + more * reach.over[where] if beside else value, out=high)
+    np.minimum(low, value - more * reach.under[where] if beside else value, out=low)
+
+
+def _with_margins(reach: _Reach) -> _Reach:
+    np.add(reach.highest, reach.over, out=reach.highest)
+    np.subtract(reach.lowest, reach.under, out=reach.lowest)
+    return reach
 
 
 def _pruned(
-    polynomials: Floats, reach: Floats, margin: Floats, top: Floats, scale: Floats
+    polynomials: Floats, sign: float, reach: Floats, margin: Floats, top: Floats, scale: Floats
 ) -> Stretches:
-    """Stretches between places of the rows that may hold the largest value.
+    """Stretches between places of the rows that may hold the largest value, times ``sign``.
 
     Of rows that reach it at an end of a segment, where many may meet at a support, the first.
     """
     best = top.max(axis=(0, 1)) - EQUAL * scale
     may = reach >= best
-    ends = np.max(_at_ends(polynomials), axis=0)
-    first = np.argmax(np.any(ends >= best, axis=0), axis=0)
-    members = np.arange(len(best))
-    may[:, first, members] |= ends[:, first, members] >= best
+    _mark_first_at_ends(may, polynomials, sign, top, best)
     segment, row, member = np.nonzero(may)
     samples = len(top)
     u = np.linspace(-1.0, 1.0, samples)[:, None]
-    values = evaluate(polynomials[:, None, segment, row, member], u)
-    rise = np.abs(np.diff(values, axis=0))
-    over = np.maximum(0.0, 4.0 * margin[segment, row, member] - rise) ** 2
-    with np.errstate(divide="ignore", invalid="ignore"):
-        over = np.where(over > 0.0, over / (16.0 * margin[segment, row, member]), 0.0)
-    within = np.maximum(values[:-1], values[1:]) + over >= best[member]
-    which, place = np.nonzero(within.T)
+    values = sign * evaluate(polynomials[:, None, segment, row, member], u)
+    four = 4.0 * margin[segment, row, member]
+    over = np.maximum(0.0, four - np.abs(np.diff(values, axis=0)))
+    over *= over
+    over /= np.maximum(4.0 * four, np.finfo(float).tiny)
+    over += np.maximum(values[:-1], values[1:])
+    which, place = np.nonzero((over >= best[member]).T)
     chosen, low, high = _runs(which, place, samples)
     return Stretches(member[chosen], row[chosen], segment[chosen], low, high)
 
 
-def _at_ends(polynomials: Floats) -> Floats:
-    even, odd = (np.add.reduce(polynomials[i::2], axis=0) for i in (0, 1))
-    return np.stack([even - odd, even + odd])
+def _mark_first_at_ends(
+    may: NDArray[np.bool_], polynomials: Floats, sign: float, top: Floats, best: Floats
+) -> None:
+    members = np.flatnonzero(np.maximum(top[0], top[-1]).max(axis=0) >= best)
+    if not len(members):
+        return
+    chosen = sign * polynomials[..., members]
+    even, odd = (np.add.reduce(chosen[i::2], axis=0) for i in (0, 1))
+    reached = even + np.abs(odd) >= best[members]  # (K, N, n)
+    row = np.argmax(np.any(reached, axis=0), axis=0)
+    may[:, row, members] |= reached[:, row, np.arange(len(members))]
 
 
 def _varied(
@@ -220,10 +281,6 @@ def _closed(polynomials: Floats) -> tuple[Floats, Floats]:
     np.copyto(high, turning, where=inside & (bow < 0.0))
     np.copyto(low, turning, where=inside & (bow > 0.0))
     return high, low
-
-
-def _nothing(polynomials: Floats) -> tuple[Floats, Floats]:
-    return np.full(polynomials.shape[1:], -np.inf), np.full(polynomials.shape[1:], np.inf)
 
 
 def _margins(polynomials: Floats, samples: int) -> tuple[Floats, Floats]:
