@@ -1,6 +1,7 @@
 """What stands in the posted sets, read back by ifcopenshell in every schema."""
 
 import math
+from dataclasses import replace
 
 import ifcopenshell
 import ifcopenshell.util.element as element_tools
@@ -11,6 +12,7 @@ from posting_makers import (
     COLUMN_B,
     EI,
     SCHEMAS,
+    SECOND_BEAM,
     outcome_of,
     small_model,
     span_result,
@@ -258,6 +260,39 @@ def test_an_element_that_is_not_there_becomes_a_finding(tmp_path):
 
     assert [(f.slug, f.elements) for f in report.findings] == [("element-not-in-file", (missing,))]
     assert properties(model, BEAM, "Spanledger_Effects")
+
+
+def test_of_elements_that_share_a_global_id_the_first_gets_the_results(tmp_path):
+    path = tmp_path / "model.ifc"
+    path.write_bytes(small_model().replace(SECOND_BEAM.encode(), BEAM.encode()))
+    report = writer.post(path, path, outcome_of(span_result(BEAM)))
+    model = ifcopenshell.open(str(path))
+
+    assert [(f.slug, f.elements) for f in report.findings] == [("shared-global-id", (BEAM,))]
+    assert len(element_tools.get_psets(model.by_id(30))) == 3
+    assert not element_tools.get_psets(model.by_id(31))
+
+
+def test_an_element_of_two_lines_has_the_larger_values_and_says_so(tmp_path):
+    first = span_result(BEAM, load=9_000.0, mark="F-1", fingerprint="one")
+    second = span_result(BEAM, load=20_000.0, mark="F-2", fingerprint="two")
+    model, report = posted(tmp_path, outcome_of(first, second))
+    effects = properties(model, BEAM, "Spanledger_Effects")
+    record = properties(model, BEAM, "Spanledger_Record")
+    table = properties(model, BEAM, "Spanledger_Diagrams")["MomentMax"]
+
+    assert [f.slug for f in report.findings] == ["element-of-several-lines"]
+    assert effects["LineMark"].NominalValue.wrappedValue == "F-1, F-2"
+    assert effects["SaggingMoment"].NominalValue.wrappedValue == pytest.approx(135.0)
+    assert max(v.wrappedValue for v in table.DefinedValues) == pytest.approx(135.0)
+    assert record["Fingerprint"].NominalValue.wrappedValue == "one+two"
+
+
+def test_a_model_that_is_not_the_one_analysed_is_reported(tmp_path):
+    outcome = replace(outcome_of(span_result(BEAM)), fingerprint="0" * 64)
+    _, report = posted(tmp_path, outcome)
+
+    assert [f.slug for f in report.findings] == ["model-changed"]
 
 
 def test_a_result_that_is_no_number_is_not_written(tmp_path):
