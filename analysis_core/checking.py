@@ -22,6 +22,13 @@ FIGURES: Mapping[str, Mapping[str, Figure]] = {
     "aci-318-19": concrete_aci.FIGURES,
     "en-1995-1-1": timber_en.FIGURES,
 }
+TITLES: Mapping[str, str] = {
+    "en-1993-1-1": "EN 1993-1-1:2005, steel",
+    "aisc-360": "ANSI/AISC 360-16 and 360-22, steel",
+    "en-1992-1-1": "EN 1992-1-1:2004, concrete",
+    "aci-318-19": "ACI 318-19, concrete",
+    "en-1995-1-1": "EN 1995-1-1:2004 with A1 and A2, timber",
+}
 _TIMBER = "en-1995-1-1"
 _DEFLECTION_NOT_COVERED = (
     "Elastic, from the rigidities as modelled; cracking and creep are not covered here."

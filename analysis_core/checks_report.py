@@ -6,7 +6,7 @@ import math
 from collections.abc import Mapping
 from typing import Any
 
-from analysis_core.checking import MemberChecks
+from analysis_core.checking import FIGURES, TITLES, MemberChecks
 from analysis_core.checks.working import Check
 from analysis_core.results import Outcome
 from analysis_core.tables import safe, table
@@ -15,8 +15,8 @@ from analysis_core.units import DisplayUnits
 ByLine = Mapping[str, tuple[MemberChecks, ...]]
 _UNCONFIRMED = " †"
 CAUTION = (
-    "† Clauses and figures of the checks were written from memory of the standards and not compared "
-    "with them; a licensed engineer must do so."
+    "† Clauses and figures of the checks were written from memory of the standards and not "
+    "compared with them; a licensed engineer must do so."
 )
 
 
@@ -32,6 +32,42 @@ def checks_text(outcome: Outcome, found: ByLine, units: DisplayUnits) -> str:
     head = ("line", "member", "check", "demand", "resistance", "use", "result", "clause")
     text = table(head, ("",) * len(head), rows)
     return f"Checks of members\n{text}\n{CAUTION}"
+
+
+def figures_text(code: str, replaced: Mapping[str, object]) -> str:
+    """Return the figures of a code of the checks, with clause, meaning and mark.
+
+    ``replaced``: figures that a project puts its own in place of.
+    """
+    rows = [
+        (
+            name,
+            f"{figure.value:g}" + (f" (here {replaced[name]})" if name in replaced else ""),
+            "national" if figure.national else "",
+            figure.clause,
+            figure.meaning + ("" if figure.confirmed else _UNCONFIRMED),
+        )
+        for name, figure in FIGURES[code].items()
+    ]
+    text = table(("figure", "value (SI)", "", "clause", "meaning"), ("",) * 5, rows)
+    return (
+        f"{TITLES[code]}: figures of the checks\n{text}\n{CAUTION}\nA job file replaces them: "
+        f"checks: {{replace: {{{rows[0][0]}: {FIGURES[code][rows[0][0]].value:g}}}}}."
+    )
+
+
+def figures_data(code: str, replaced: Mapping[str, object]) -> dict[str, Any]:
+    """Return the same as plain data."""
+    return {
+        "name": code,
+        "title": TITLES[code],
+        "figures": {
+            name: {"value": replaced.get(name, figure.value), "of_code": figure.value,
+                   "clause": figure.clause, "meaning": figure.meaning,
+                   "national": figure.national, "confirmed": figure.confirmed}
+            for name, figure in FIGURES[code].items()
+        },
+    }  # fmt: skip
 
 
 def checks_data(found: tuple[MemberChecks, ...]) -> list[dict[str, Any]]:

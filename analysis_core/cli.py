@@ -226,9 +226,11 @@ def _sheet_options(commands: Any) -> None:
 
 
 def _rules_options(commands: Any) -> None:
-    about = "list the built-in rule sets, or print one"
+    about = "list the built-in rule sets and the codes of the checks, or print one"
     command = _command(commands, "rules", _rules, about)
-    command.add_argument("name", nargs="?", metavar="NAME", help="the rule set to print")
+    command.add_argument(
+        "name", nargs="?", metavar="NAME", help="the rule set, or the code of the checks, to print"
+    )
     command.add_argument(
         "--job", metavar="JOB.yaml", help="print the rule set of this job file, as it replaces it"
     )
@@ -392,9 +394,11 @@ def _sheet(options: argparse.Namespace) -> int:
 def _rules(options: argparse.Namespace) -> int:
     name, replaced = options.name, {}
     if options.job:
-        rules = _settings(options).rules
-        name = name or rules.name
-        replaced = dict(rules.replace) if name == rules.name else {}
+        settings = _settings(options)
+        name = name or settings.rules.name
+        replaced = dict(settings.rules.replace) if name == settings.rules.name else {}
+        if pipeline.is_check_code(name):
+            replaced = dict(settings.checks.replace)
     text = pipeline.rules_text(name, replaced)
     _put(options, lambda: pipeline.rules_document(name, replaced), text)
     return OK

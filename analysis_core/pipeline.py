@@ -450,15 +450,31 @@ def survey_document(
 
 
 def rules_text(name: str | None, replaced: Mapping[str, object] | None = None) -> str:
-    """Return the list of rule sets, or one rule set in full.
+    """Return the list of rule sets, one rule set in full, or the figures of a code of the checks.
 
     ``replaced``: figures that a project puts its own in place of.  Raises JobError.
     """
     from analysis_core import rules
+    from analysis_core.checking import TITLES
+    from analysis_core.checks_report import figures_text
 
     if name is None:
-        return "\n".join(f"{key:16} {rules.load(key).title}" for key in rules.names())
+        titles = {key: rules.load(key).title for key in rules.names()}
+        sets, codes = (
+            "\n".join(f"{key:16} {title}" for key, title in named.items())
+            for named in (titles, TITLES)
+        )
+        return f"{sets}\n\nChecks of members:\n{codes}"
+    if name in TITLES:
+        return figures_text(name, replaced or {})
     return rules.describe(rules.load(name, replace=replaced))
+
+
+def is_check_code(name: str) -> bool:
+    """Whether this is the name of a code that members are checked by."""
+    from analysis_core.checking import TITLES
+
+    return name in TITLES
 
 
 def rules_document(
@@ -466,14 +482,19 @@ def rules_document(
 ) -> dict[str, Any]:
     """Return what ``rules_text`` says as plain data, ready for JSON.  Raises JobError."""
     from analysis_core import rules
+    from analysis_core.checking import TITLES
+    from analysis_core.checks_report import figures_data
 
     head = {"format": "spanledger-rules", "version": 1}
+    if name in TITLES:
+        return {**head, "checks": figures_data(name, replaced or {})}
     if name is not None:
         return {**head, "set": asdict(rules.load(name, replace=replaced))}
     sets = [rules.load(key) for key in rules.names()]
     return {
         **head,
         "sets": [{"name": r.name, "title": r.title, "edition": r.edition} for r in sets],
+        "codes": [{"name": name, "title": title} for name, title in TITLES.items()],
     }
 
 

@@ -206,12 +206,25 @@ def moment_gradient(segment: UnbracedSegment) -> float:
 
 
 def lateral_length(design: MemberDesign) -> float:
-    """Return the longest length between places where both flanges are held, m."""
+    """Return the longest buckling length between places where both flanges are held, m.
+
+    Where an end of it is free, twice its length (a column held at its foot alone).
+    """
     held = design.restraints
     both = sorted({*(p for p in held.top if p in held.bottom), *held.loose})
     if held.top_continuous and held.bottom_continuous:
         return 0.0
-    return max((b - a for a, b in _lengths(design, tuple(both))), default=design.length)
+    lengths = (
+        (b - a) * (2.0 if a in held.loose or b in held.loose else 1.0)
+        for a, b in _lengths(design, tuple(both))
+    )
+    return max(lengths, default=design.length)
+
+
+def length_in_plane(design: MemberDesign) -> float:
+    """Return the buckling length in the plane of bending, m: doubled where an end is free."""
+    factor = 2.0 if design.restraints.loose else 1.0
+    return factor * max(design.length, design.span)
 
 
 def plates(section: Section) -> dict[str, float]:

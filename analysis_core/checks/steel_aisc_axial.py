@@ -9,6 +9,7 @@ from analysis_core.checks.design import (
     EffectField,
     MemberDesign,
     lateral_length,
+    length_in_plane,
     plates,
 )
 from analysis_core.checks.working import Check, Figures, Working, not_checked
@@ -91,9 +92,9 @@ def _interaction(
 def _slenderness(design: MemberDesign, w: Working) -> float:
     section = design.section
     radii = [math.sqrt(i / section.area) for i in (section.inertia, section.inertia_lateral)]
-    lengths = [max(design.length, design.span), lateral_length(design)]
+    lengths = [length_in_plane(design), lateral_length(design)]
     x, y = (length / radius for length, radius in zip(lengths, radii, strict=True))
-    w.step("L_x / r_x", "", x, "", "E2", note="K = 1")
+    w.step("L_x / r_x", "", x, "", "E2", note="K = 1; 2 where an end is free")
     w.step("L_y / r_y", "", y, "", "E2", note="K = 1, where both flanges are held")
     return max(x, y)
 

@@ -11,6 +11,7 @@ from analysis_core.checks.design import (
     EffectField,
     MemberDesign,
     lateral_length,
+    length_in_plane,
     plates,
 )
 from analysis_core.checks.steel_en_lateral import (
@@ -110,9 +111,7 @@ def _member(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
         return not_checked(name, reason, clause)
     w, section = Working(), design.section
     squash = section.area * fy / f["gamma_M1"]
-    chi_y = _flexural(
-        design, w, "y", f["L_cr_y"] * max(design.length, design.span), section.inertia, fy
-    )
+    chi_y = _flexural(design, w, "y", f["L_cr_y"] * length_in_plane(design), section.inertia, fy)
     chi_z = _flexural(design, w, "z", lateral_length(design), section.inertia_lateral, fy)
     moment_resistance = moment_resistance_of(design, f, fy, class_, w) * f["gamma_M0"]
     moment_resistance /= f["gamma_M1"]

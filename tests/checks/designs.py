@@ -1,5 +1,7 @@
 """Members to be checked, made by hand for the tests of checks."""
 
+from dataclasses import replace
+
 import numpy as np
 
 from analysis_core.checks.design import EffectField, Governing, MemberDesign, Restraints
@@ -63,3 +65,61 @@ def simple_span(section, material, length, load, *, held=(), continuous=False):
         ),
         Restraints(top, (0.0, length), top_continuous=continuous),
     )  # fmt: skip
+
+
+def box(name, h, b, t):
+    """A rectangular hollow section with sharp corners."""
+    area = b * h - (b - 2 * t) * (h - 2 * t)
+    iy = (b * h**3 - (b - 2 * t) * (h - 2 * t) ** 3) / 12
+    iz = (h * b**3 - (h - 2 * t) * (b - 2 * t) ** 3) / 12
+    wpl = (b * h**2 - (b - 2 * t) * (h - 2 * t) ** 2) / 4
+    torsion = 2 * t * (h - t) ** 2 * (b - t) ** 2 / (h + b - 2 * t)  # Bredt
+    dimensions = {
+        "width": b, "depth": h, "wall_thickness": t, "section_modulus_top": 2 * iy / h,
+        "section_modulus_bottom": 2 * iy / h, "plastic_modulus": wpl,
+    }  # fmt: skip
+    return Section(
+        name, "hollow rectangle", area, iy, iz, torsion=torsion, depth=h, width=b, top=h / 2,
+        dimensions=tuple(dimensions.items()),
+    )  # fmt: skip
+
+
+def tube(name, diameter, t):
+    """A round tube."""
+    inner = diameter - 2 * t
+    inertia = np.pi * (diameter**4 - inner**4) / 64
+    dimensions = {
+        "diameter": diameter, "wall_thickness": t, "depth": diameter, "width": diameter,
+        "section_modulus_top": 2 * inertia / diameter,
+        "section_modulus_bottom": 2 * inertia / diameter,
+        "plastic_modulus": (diameter**3 - inner**3) / 6,
+    }  # fmt: skip
+    return Section(
+        name, "tube", np.pi * (diameter**2 - inner**2) / 4, inertia, inertia, torsion=2 * inertia,
+        depth=diameter, width=diameter, top=diameter / 2, dimensions=tuple(dimensions.items()),
+    )  # fmt: skip
+
+
+def tee(flange, flange_depth, web, depth, *, roll=0.0):
+    """A T of concrete, its flange on top unless rolled over."""
+    parts = ((flange, flange_depth, flange_depth / 2),
+             (web, depth - flange_depth, (depth + flange_depth) / 2))  # fmt: skip
+    area = sum(b * h for b, h, _ in parts)
+    down = sum(b * h * z for b, h, z in parts) / area
+    inertia = sum(b * h**3 / 12 + b * h * (z - down) ** 2 for b, h, z in parts)
+    top = down if roll == 0.0 else depth - down
+    dimensions = {
+        "width": flange, "depth": depth, "web_thickness": web, "flange_thickness": flange_depth,
+        "section_modulus_top": inertia / top, "section_modulus_bottom": inertia / (depth - top),
+        "roll": roll,
+    }  # fmt: skip
+    return Section(
+        "T", "tee", area, inertia, depth=depth, width=flange, top=top,
+        dimensions=tuple(dimensions.items()),
+    )  # fmt: skip
+
+
+def pressed(design, force):
+    """The same member with an axial force all along, tension positive."""
+    fields = tuple(replace(f, axial=(force, force)) for f in design.fields)
+    return replace(design, fields=fields)

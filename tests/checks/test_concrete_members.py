@@ -1,0 +1,162 @@
+"""T-sections of concrete, shear, least reinforcement and span over depth, each a second way."""
+
+import math
+from dataclasses import replace
+
+import numpy as np
+import pytest
+from designs import C30, pressed, rectangle, simple_span, tee
+from scipy.optimize import brentq
+
+from analysis_core.checks import concrete_aci, concrete_en
+from analysis_core.checks.concrete_parts import shape_of
+from analysis_core.checks.working import Figures
+
+EN = Figures(concrete_en.FIGURES, {})
+ACI = Figures(concrete_aci.FIGURES, {})
+PSI = concrete_aci.PSI
+T = {"flange": 1.0, "flange_depth": 0.12, "web": 0.3}
+
+
+def strips(depth, *, flange, flange_depth, web, count=200_000):
+    """Area and first moment about the top of the compressed part of a T, by summation."""
+    z = (np.arange(count) + 0.5) * depth / count
+    width = np.where(z < flange_depth, flange, web)
+    return float(width.mean() * depth), float((width * z).mean() * depth)
+
+
+@pytest.mark.parametrize("moment", [200e3, 700e3, 1000e3])
+def test_the_reinforcement_of_a_t_balances_its_stress_block(moment):
+    d, fcd, fyd = 0.5, 17e6, 434.8e6
+
+    def resisted(depth):
+        area, first = strips(depth, **T)
+        return fcd * (area * d - first)
+
+    depth = brentq(lambda s: resisted(s) - moment, 1e-4, 0.45)
+    found = concrete_en.required_reinforcement(
+        moment, b=0.3, d=d, d2=0.05, fcd=fcd, fyd=fyd, limit=0.6, e_s=200e9, flange=(1.0, 0.12)
+    )
+
+    assert (0.8 * found.x_over_d * d) == pytest.approx(depth, rel=1e-4)
+    assert found.tension == pytest.approx(fcd * strips(depth, **T)[0] / fyd, rel=1e-4)
+    assert found.compression == 0.0
+    block = concrete_aci.required_area(
+        moment, b=0.3, d=d, fc=fcd / 0.85, fy=fyd, phi=1.0, flange=(1.0, 0.12)
+    )
+    assert block == pytest.approx(found.tension, rel=1e-9)  # the same block under another name
+
+
+def test_the_most_reinforcement_of_a_t_counts_its_flange():
+    values = {"b": 0.3, "d": 0.5, "fc": 4000 * PSI, "fy": 60e3 * PSI, "e_s": 29e6 * PSI}
+    depth = 0.85 * 0.5 * 0.003 / (0.006 + 60 / 29000)
+    area = strips(depth, **T)[0]
+
+    found = concrete_aci.largest_area(**values, flange=(1.0, 0.12))
+
+    assert found == pytest.approx(0.85 * 4000 / 60e3 * area, rel=1e-4)
+
+
+def test_a_flange_counts_only_where_it_is_compressed():
+    on_top = simple_span(tee(1.0, 0.12, 0.3, 0.5), C30, 6.0, 30e3)
+    below = simple_span(tee(1.0, 0.12, 0.3, 0.5, roll=math.pi), C30, 6.0, 30e3)
+    plain = simple_span(rectangle(0.3, 0.5), C30, 6.0, 30e3)
+
+    def needed(design):
+        (check,) = [c for c in concrete_en.check_concrete(design, EN) if "sagging" in c.name]
+        return next(s.value for s in check.steps if s.symbol == "A_s")
+
+    assert shape_of(on_top).flange_on_top
+    assert not shape_of(below).flange_on_top
+    assert needed(on_top) < needed(plain)
+    assert needed(below) == pytest.approx(needed(plain), rel=1e-9)
+
+
+def test_a_flange_in_tension_needs_more_least_reinforcement():
+    # 9.2.1.1: b_t is the mean width of the tension zone, from the centroid outwards.
+    section = tee(1.0, 0.12, 0.3, 0.5)
+    inside = (1.0 * 0.12 + 0.3 * (section.top - 0.12)) / section.top
+    assert shape_of(simple_span(section, C30, 6.0, 1e3)).tension_width(
+        bottom=False, zone=section.top
+    ) == pytest.approx(inside)
+
+
+def test_only_the_effective_width_of_a_flange_counts():
+    wide = shape_of(simple_span(tee(3.0, 0.12, 0.3, 0.5), C30, 6.0, 1e3))
+    # EN: sides 1.35, l0 = 4.2: 0.2 · 1.35 + 0.42 = 0.69 <= 0.84; b = 0.3 + 1.38.
+    assert concrete_en.effective_flange(wide, 6.0) == pytest.approx(1.68)
+    # ACI: the least of 8 · 0.12 = 0.96, 6/8 = 0.75 and 1.35.
+    assert concrete_aci.effective_flange(wide, 6.0) == pytest.approx(1.8)
+
+
+def test_shear_of_a_slab_strip_by_hand():
+    # EN 1992-1-1, 6.2.2 by hand: d = 452 mm, k = 1.665, rho = 0.151 %, C30.
+    design = simple_span(rectangle(0.3, 0.5), C30, 6.0, 10e3)
+    check = next(c for c in concrete_en.check_concrete(design, EN) if c.name == "shear")
+    steps = {s.symbol: s.value for s in check.steps}
+    k = 1 + math.sqrt(200 / 452)
+    rho = 0.26 * 0.3 * 30 ** (2 / 3) / 500
+    by_rho = 0.12 * k * (100 * rho * 30) ** (1 / 3)
+    least = 0.035 * k**1.5 * math.sqrt(30)
+    assert steps["V_Rd,c"] == pytest.approx(max(by_rho, least) * 300 * 452, rel=1e-6)
+    # Below it the least links do: 0.08 sqrt(30) / 500 · 300 mm²/mm.
+    assert check.demand < steps["V_Rd,c"]
+    assert steps["A_sw/s"] == pytest.approx(0.08 * math.sqrt(30) / 500 * 0.3, rel=1e-9)
+
+
+@pytest.mark.parametrize("load", [40e3, 150e3, 210e3])
+def test_links_carry_the_shear_at_the_angle_that_the_struts_allow(load):
+    design = simple_span(rectangle(0.3, 0.5), C30, 6.0, load)
+    check = next(c for c in concrete_en.check_concrete(design, EN) if c.name == "shear")
+    steps = {s.symbol: s.value for s in check.steps}
+    demand, z, fcd = load * 3.0, 0.9 * 0.452, 20e6
+    nu = 0.6 * (1 - 30 / 250)
+
+    def struts(cot):
+        return 0.3 * z * nu * fcd / (cot + 1 / cot)
+
+    cot = 2.5 if struts(2.5) >= demand else brentq(lambda c: struts(c) - demand, 1.0, 2.5)
+    assert steps["cot θ"] == pytest.approx(cot, rel=1e-6)
+    assert steps["A_sw/s"] == pytest.approx(demand / (z * 500e6 / 1.15 * cot), rel=1e-6)
+
+
+def test_no_stirrups_only_where_both_limits_allow_it():
+    """9.6.3.1 with 22.5.5.1(c): the size effect makes deep beams weaker than the threshold."""
+    values = {"b": 0.3, "fc": 4000 * PSI, "light": 1.0}
+    with_ = concrete_aci.concrete_shear(d=0.3, rho=None, **values)
+    assert with_ == pytest.approx(2 * math.sqrt(4000) * PSI * 0.3 * 0.3)
+    deep = 0.9
+    size = math.sqrt(2 / (1 + deep / 0.0254 / 10))
+    without = concrete_aci.concrete_shear(d=deep, rho=0.0033, **values)
+    assert without == pytest.approx(
+        8 * size * 0.0033 ** (1 / 3) * math.sqrt(4000) * PSI * 0.3 * deep
+    )
+    assert without < concrete_aci.concrete_shear(d=deep, rho=None, **values) / 2
+
+
+@pytest.mark.parametrize(
+    ("ends", "cantilever", "factor", "depth"),
+    [(0, False, 1.0, 16), (1, False, 1.3, 18.5), (2, False, 1.5, 21), (0, True, 0.4, 8)],
+)
+def test_span_over_depth_follows_the_structural_system(ends, cantilever, factor, depth):
+    # EN 1992-1-1 table 7.4N and ACI 318-19 table 9.3.1.1, from memory.
+    design = replace(
+        simple_span(rectangle(0.3, 0.5), C30, 6.0, 20e3), continuous_ends=ends,
+        cantilever=cantilever,
+    )  # fmt: skip
+    assert concrete_en.structural_system(design)[0] == factor
+    aci = next(c for c in concrete_aci.check_concrete(design, ACI) if c.name == "span over depth")
+    assert aci.resistance == pytest.approx(depth)  # grade 60: the factor 0.4 + fy/100 ksi is 1
+    assert aci.use == pytest.approx(6.0 / 0.5 / depth)
+
+
+def test_axial_force_and_odd_concrete_are_not_checked():
+    design = simple_span(rectangle(0.3, 0.5), C30, 6.0, 20e3)
+    light = replace(design, material=replace(C30, name="LC30/33"))
+    for outside in (pressed(design, 50e3), pressed(design, -500e3), light):
+        for found in (
+            concrete_en.check_concrete(outside, EN), concrete_aci.check_concrete(outside, ACI)
+        ):  # fmt: skip
+            assert [c.status for c in found] == ["not checked"]
+    little = concrete_en.check_concrete(pressed(design, -100e3), EN)
+    assert [c.status for c in little] == [c.status for c in concrete_en.check_concrete(design, EN)]

@@ -1,0 +1,179 @@
+"""Steel members by AISC 360: hollow sections, built-up shapes, axial force, each a second way."""
+
+import math
+from dataclasses import replace
+
+import pytest
+from designs import INCH, S355, W18X50, box, i_section, pressed, simple_span, tube
+
+from analysis_core.checks import (
+    steel_aisc,
+    steel_aisc_axial,
+    steel_aisc_hollow,
+)
+from analysis_core.checks.working import Figures
+
+FIGURES = Figures(steel_aisc.FIGURES, {})
+KIP, FOOT = 4448.2216152605, 0.3048
+KSI = 1e3 * 4.4482216152605 / INCH**2
+A992 = replace(S355, name="A992", strength=(("fy", 50 * KSI),))
+A500 = replace(S355, name="A500", strength=(("fy", 50 * KSI),))
+E, FY = 29000 * KSI, 50 * KSI
+
+
+def checks(design, **options):
+    return {c.name: c for c in steel_aisc.check_steel(design, FIGURES, **options)}
+
+
+def test_the_available_strength_in_compression_is_that_of_the_manual():
+    # AISC Manual, table 4-14 (available critical stress, Fy = 50 ksi), from memory:
+    # KL/r = 50: phi Fcr = 37.5 ksi; 100: 21.7; 150: 10.0 (Fcr / Omega 14.4 at 100).
+    for slender, stress in ((50, 37.5), (100, 21.7), (150, 10.0)):
+        elastic = math.pi**2 * E / slender**2
+        found = 0.9 * steel_aisc_axial.critical_stress(elastic, FY) / KSI
+        assert found == pytest.approx(stress, abs=0.06)
+
+
+def test_column_strength_is_continuous_where_its_formulas_meet():
+    meet = FY / 2.25
+    below, above = (steel_aisc_axial.critical_stress(meet * k, FY) for k in (0.999999, 1.000001))
+    assert below == pytest.approx(above, rel=6e-4)  # 0.877 has three digits
+
+
+@pytest.mark.parametrize(("axial", "flexure", "total"), [
+    (0.2, 0.9, 0.2 + 8 / 9 * 0.9), (0.1999, 0.9, 0.1999 / 2 + 0.9), (0.6, 0.45, 1.0),
+])  # fmt: skip
+def test_the_interaction_meets_on_both_sides_of_one_fifth(axial, flexure, total):
+    assert steel_aisc_axial.interaction(axial, flexure) == pytest.approx(total)
+    assert steel_aisc_axial.interaction(0.2, 0.9) == pytest.approx(
+        steel_aisc_axial.interaction(0.2 - 1e-12, 0.9)
+    )
+
+
+# AISC Steel Construction Manual, table 1-1, from memory.
+W10X49 = i_section(
+    "W10X49", 10.0 * INCH, 10.0 * INCH, 0.340 * INCH, 0.560 * INCH, 0.500 * INCH,
+    area=14.4 * INCH**2, iy=272 * INCH**4, iz=93.4 * INCH**4, it=1.39 * INCH**4,
+    iw=2070 * INCH**6, wpl=60.4 * INCH**3, wel=54.6 * INCH**3,
+)  # fmt: skip
+
+
+def test_a_column_with_moment_by_hand():
+    design = pressed(simple_span(W10X49, A992, 12 * FOOT, 5e3), -150 * KIP)
+    found = checks(design)
+    check = found["axial force and flexure"]
+    # By hand: r_y = sqrt(93.4/14.4) = 2.547 in, L/r = 56.5, F_e = 89.6 ksi, F_cr = 39.6 ksi;
+    # AISC Manual, table 4-1, from memory: phi P_n of W10x49 at 12 ft is 513 kip.
+    slender = 144 / math.sqrt(93.4 / 14.4)
+    elastic = math.pi**2 * 29000 / slender**2
+    strength = 0.9 * 0.658 ** (50 / elastic) * 50 * 14.4
+    assert strength == pytest.approx(513, abs=1.5)
+    share = 150 / strength
+    moment = 5e3 * (12 * FOOT) ** 2 / 8 / found["flexure"].resistance
+    assert share > 0.2
+    assert check.use == pytest.approx(share + 8 / 9 * moment, rel=1e-3)
+    assert "axial force and flexure" not in checks(simple_span(W10X49, A992, 12 * FOOT, 5e3))
+    # W18x50: h/t_w = 45.2 > 1.49 sqrt(E/F_y) = 35.9, slender in compression.
+    slender_web = pressed(simple_span(W18X50, A992, 12 * FOOT, 5e3), -150 * KIP)
+    assert checks(slender_web)["axial force and flexure"].status == "not checked"
+
+
+def test_a_slender_wall_in_compression_is_not_checked():
+    thin = box("HSS 16x8x1/8", 16 * INCH, 8 * INCH, 0.125 * INCH)
+    found = checks(pressed(simple_span(thin, A500, 5.0, 1e3), -50 * KIP))
+    assert found["axial force and flexure"].status == "not checked"
+
+
+def test_a_round_tube_passes_from_plastic_to_elastic_without_a_step():
+    z, s = 1.3e-4, 1.0e-4
+    compact, slender = 0.07 * E / FY, 0.31 * E / FY
+
+    def strength(ratio):
+        return steel_aisc_hollow.tube_strength(ratio, z=z, s=s, e=E, fy=FY)
+
+    assert strength(compact) == FY * z
+    # (F8-2) gives 1.3 F_y S at the limit: the shape factor of a thin tube is 4/pi = 1.27.
+    assert strength(compact * 1.0001) == pytest.approx(1.3 * FY * s, rel=1e-3)
+    assert strength(slender) == pytest.approx((0.021 / 0.31 + 1.0) * FY * s, rel=1e-9)
+    assert strength(slender * 1.0001) is None
+
+
+def test_the_walls_of_a_box_pass_from_plastic_to_elastic():
+    z, s, root = 1.2e-4, 1.0e-4, math.sqrt(E / FY)
+
+    def strength(flange, web):
+        return steel_aisc_hollow.box_strength(flange * root, web * root, z=z, s=s, e=E, fy=FY)
+
+    assert strength(1.12, 2.42) == FY * z
+    # (F7-2): 3.57 * 1.12 - 4.0 = -0.0016 and 3.57 * 1.40 - 4.0 = 0.998, that is, M_p to F_y S.
+    assert strength(1.1201, 1.0) == pytest.approx(FY * z, rel=1e-3)
+    assert strength(1.40, 1.0) == pytest.approx(FY * s, rel=1e-3)
+    # (F7-6): 0.305 * 5.70 - 0.738 = 1.0.
+    assert strength(1.0, 5.70) == pytest.approx(FY * s, rel=1e-3)
+    assert strength(1.4001, 1.0) is None
+    assert strength(1.0, 5.7001) is None
+
+
+def test_the_webs_of_a_box_buckle_in_shear_without_a_step():
+    root = math.sqrt(5.0 * E / FY)
+
+    def coefficient(ratio):
+        return steel_aisc.panel_coefficient(ratio * root, 5.0, E, FY)
+
+    assert coefficient(1.10) == 1.0
+    assert coefficient(1.37) == pytest.approx(1.10 / 1.37)
+    assert coefficient(1.3701) == pytest.approx(1.10 / 1.37, rel=3e-3)
+    assert coefficient(2.0) == pytest.approx(1.51 / 4.0)
+
+
+def test_shear_of_hollow_sections_by_hand():
+    hss = box("HSS 8x4x1/4", 8 * INCH, 4 * INCH, 0.25 * INCH)
+    found = checks(simple_span(hss, A500, 5.0, 1e3))["shear"]
+    # A_w = 2 (8 - 3/4) 1/4 = 3.625 in²; 0.9 · 0.6 · 50 · 3.625 = 97.9 kip.
+    assert found.resistance / KIP == pytest.approx(97.875, rel=1e-4)
+    pipe = tube("HSS 6.000x0.250", 6 * INCH, 0.25 * INCH)
+    found = checks(simple_span(pipe, A500, 5.0, 1e3))["shear"]
+    area = math.pi * (6**2 - 5.5**2) / 4
+    assert found.resistance / KIP == pytest.approx(0.9 * 0.6 * 50 * area / 2, rel=1e-4)
+
+
+def test_built_up_shapes_have_the_smaller_factor_for_shear_and_other_limits():
+    dimensions = {**dict(W18X50.dimensions), "fillet_radius": 0.0}
+    welded = replace(W18X50, dimensions=tuple(dimensions.items()))
+    rolled_, welded_ = (
+        checks(simple_span(s, A992, 6.0, 1e3))["shear"].resistance for s in (W18X50, welded)
+    )
+    assert welded_ == pytest.approx(0.9 * rolled_)
+    shape = steel_aisc.shape_of(simple_span(welded, A992, 6.0, 1e3))
+    kc = 4 / math.sqrt(shape.h / shape.tw)
+    assert steel_aisc.flange_limits(shape, E, FY)[1] == pytest.approx(
+        0.95 * math.sqrt(min(max(kc, 0.35), 0.76) * E / (0.7 * FY))
+    )
+
+
+def test_the_flange_strength_is_continuous_at_both_limits():
+    shape = steel_aisc.shape_of(simple_span(W18X50, A992, 6.0, 1e3))
+    compact, noncompact = steel_aisc.flange_limits(shape, E, FY)
+
+    def strength(ratio):
+        return steel_aisc.flange_strength(replace(shape, tf=shape.bf / 2 / ratio), E, FY)
+
+    plastic = FY * shape.zx
+    assert strength(compact * 1.0001) == pytest.approx(plastic, rel=1e-3)
+    assert strength(noncompact) == pytest.approx(0.7 * FY * shape.sx, rel=1e-9)
+    # kc <= 0.76 makes F3-2 lower at its start: 0.9 kc E S / lambda² = 0.684 F_y S at most.
+    assert strength(noncompact * 1.0001) <= 0.7 * FY * shape.sx
+
+
+def test_lateral_strength_is_that_of_the_elastic_theory_beyond_the_limit():
+    """(F2-4) against M_cr of the exact theory: C_w = I_y h_o² / 4 makes them one."""
+    shape = steel_aisc.shape_of(simple_span(W18X50, A992, 6.0, 1e3))
+    g = E / 2.6
+    length = 30 * FOOT
+    euler = math.pi**2 * E * shape.iy / length**2
+    exact = euler * math.sqrt(shape.cw / shape.iy + g * shape.j / euler)
+
+    found = steel_aisc.lateral_strength(shape, E, FY, length, 1.0)
+
+    # 0.078 = pi^-2 · 2 G/E · ... with G = 11,200 ksi; rts is rounded into it.
+    assert found == pytest.approx(exact, rel=0.01)
