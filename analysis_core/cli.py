@@ -247,7 +247,13 @@ def _survey(options: argparse.Namespace) -> int:
     states = pipeline.posted_states(survey, settings)
     units = display_units(settings.display.system, settings.display.units)
     text = survey_text(
-        survey.model, survey.file, survey.schema, units, states=states, only=options.line
+        survey.model,
+        survey.file,
+        survey.schema,
+        units,
+        states=states,
+        only=options.line,
+        counts=survey.counts,
     )
     _put(options, lambda: pipeline.survey_document(survey, states, only=options.line), text)
     return INCOMPLETE if any(f.severity == "error" for f in survey.findings) else OK

@@ -47,6 +47,7 @@ FREE = 0.0
 # Beyond these no structure is meant, and products in the solver would leave the range of numbers.
 _LARGEST_ACTION = 1e25  # N, N/m, N·m, 1/m, m or rad
 _LONGEST_MEMBER = 1e6  # m
+_RIGIDITIES = (1e-12, 1e25)  # N·m²; from a hair to beyond any cross-section
 
 
 @dataclass(frozen=True, slots=True)
@@ -365,6 +366,8 @@ class LineModel:
     title: str = ""
     names: Mapping[str, str] = field(default_factory=dict)
     """Name by GlobalId of everything that lines and findings refer to."""
+    direct: tuple[tuple[str, str, float], ...] = ()
+    """What goes straight to an element that is no line: its GlobalId, the case, N downward."""
     held_by: Mapping[str, str] = field(default_factory=dict)
     """Name of the slab that holds a member's top sideways all along, by the member's GlobalId."""
 
@@ -403,10 +406,12 @@ def _check_member(line: Line, member: Member) -> None:
     for piece in member.pieces:
         looks = 1 if len(piece.flexural) == 1 else 9
         values = [piece.flexural_at(u / 8.0) for u in range(looks)]
-        if not all(math.isfinite(v) and v > 0.0 for v in values):
+        low, high = _RIGIDITIES
+        wrong = [v for v in values if not low <= v <= high]
+        if wrong:
             raise ModelError(
-                f"{where} has flexural rigidity {min(values):.3g} N·m²; it must be positive. "
-                f"Check its section and its modulus of elasticity."
+                f"{where} has flexural rigidity {wrong[0]:.3g} N·m²; it must be positive, from "
+                f"{low:.0e} to {high:.0e}. Check its section and its modulus of elasticity."
             )
     for spring in (member.start_spring, member.end_spring):
         if not spring >= 0.0:

@@ -31,6 +31,7 @@ from analysis_core.revision import reconcile as compare
 from analysis_core.settings import Settings
 from analysis_core.slab_restraint import held_by_slabs
 from analysis_core.solving import Memory, solve_lines
+from analysis_core.stacks import Standing, received, standing_elements
 from analysis_core.units import display_units
 
 if TYPE_CHECKING:
@@ -78,6 +79,10 @@ class Survey:
     findings: tuple[Finding, ...]
     route: str = "physical"
     """"analytical" or "physical"."""
+    counts: Mapping[str, int] = field(default_factory=dict)
+    """What the file holds, by class, and how many of it were taken as beams."""
+    standing: tuple[Standing, ...] = ()
+    """Columns, walls, piles and footings with what each stands on."""
     posted: Mapping[str, tuple[Posted, ...]] = field(default_factory=dict)
     """What was posted earlier, by the GlobalId of the element."""
 
@@ -148,7 +153,9 @@ def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ())
         model,
         findings,
         reading.building.route,
-        reading.posted,
+        counts=reading.building.counts,
+        standing=standing_elements(reading.building),
+        posted=reading.posted,
     )
 
 
@@ -191,6 +198,9 @@ def solve(
         lines=results,
         findings=tuple(dict.fromkeys((*found.findings, *findings))),
         rules=rules.name,
+        received=received(
+            found.standing, results, [case.name for case in model.cases], model.direct
+        ),
     )
 
 

@@ -170,3 +170,5 @@ class Outcome:
     findings: tuple[Finding, ...] = ()
     rules: str = ""
     """Name and edition of the rule set."""
+    received: tuple[object, ...] = ()
+    """What columns, walls and footings carry, as ``stacks.Received``, from the top down."""

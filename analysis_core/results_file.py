@@ -7,13 +7,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from typing import Any
+from typing import Any, cast
 
 from analysis_core.effects.stations import stations as stations_of
 from analysis_core.findings import Finding
 from analysis_core.line_details import LineDetail, detail_of
 from analysis_core.model import Case, Combination, Joint, Line, Member, Support
 from analysis_core.results import Extreme, LineEnvelope, LineResult, LineSolution, Outcome
+from analysis_core.stacks import Received
 
 FORMAT = "spanledger-results"
 VERSION = 1
@@ -36,7 +37,20 @@ def results_document(outcome: Outcome, *, stations: int = 21) -> dict[str, Any]:
         "cases": {case.name: _case(case) for case in outcome.model.cases},
         "combinations": {c.name: _combination(c) for c in outcome.model.combinations},
         "lines": [_line(result, stations) for result in outcome.lines],
+        "received": [_received(each) for each in cast(tuple[Received, ...], outcome.received)],
         "findings": [_finding(finding) for finding in outcome.findings],
+    }
+
+
+def _received(each: Received) -> dict[str, Any]:
+    """What a column, wall or footing carries by case: N, downward positive."""
+    return {
+        "element": each.element.global_id,
+        "name": each.element.name,
+        "storey": each.element.storey,
+        "stands_on": each.element.on,
+        "from_lines": dict(each.lines),
+        "total": dict(each.total),
     }
 
 

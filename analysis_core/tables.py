@@ -10,12 +10,13 @@ import math
 import unicodedata
 from collections import Counter
 from collections.abc import Callable, Iterable, Mapping, Sequence
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, cast
 
 from analysis_core.findings import Finding, Severity
 from analysis_core.line_details import Redistributed, detail_of
 from analysis_core.model import Joint, Line, LineModel, Member, Support
 from analysis_core.results import Extreme, LineResult, MemberEnvelope, Outcome
+from analysis_core.stacks import Received
 from analysis_core.units import DisplayUnits
 
 if TYPE_CHECKING:
@@ -35,6 +36,12 @@ def safe(text: str) -> str:
     )
 
 
+def counts_text(counts: Mapping[str, int]) -> str:
+    """Return what a file holds by class, in one sentence; "" where nothing was counted."""
+    shown = [f"{safe(name)} {count}" for name, count in counts.items() if count]
+    return f"The file holds: {', '.join(shown)}." if shown else ""
+
+
 def survey_text(
     model: LineModel,
     file: str,
@@ -43,13 +50,14 @@ def survey_text(
     *,
     states: Mapping[str, PostedState] | None = None,
     only: Sequence[str] = (),
+    counts: Mapping[str, int] | None = None,
 ) -> str:
     """Return what was found: lines, spans, supports with their reasons, actions, findings.
 
     ``states`` by mark: whether the results that stand in the file hold.  ``only``: marks of the
-    lines wanted, all where empty.
+    lines wanted, all where empty.  ``counts``: what the file holds by class.
     """
-    parts = [_headline(model, file, schema)]
+    parts = [_headline(model, file, schema), counts_text(counts or {})]
     wanted = [line for line in model.lines if not only or line.mark in only]
     parts += [_survey_line(line, units) for line in wanted]
     known = states or {}
@@ -69,6 +77,7 @@ def balance_text(outcome: Outcome, units: DisplayUnits) -> str:
     parts.append(_effects_table(outcome, units))
     parts.append(_redistribution_text(outcome, units))
     parts.append(_reactions_table(outcome, units))
+    parts.append(_received_text(outcome, units))
     parts.append(_verification_text(outcome, units))
     parts.append(findings_text(outcome.findings))
     parts.append(CAUTION)
@@ -387,6 +396,28 @@ def _reactions_table(outcome: Outcome, units: DisplayUnits) -> str:
     head = ("line", "joint", "x", "vertical max", "vertical min", "moment max", "moment min", "on")
     below = ("", "", units.symbol("length"), force, force, moment, moment, "")
     return "Reactions (strength, factored; vertical positive upward)\n" + table(head, below, rows)
+
+
+def _received_text(outcome: Outcome, units: DisplayUnits) -> str:
+    """What columns, walls and footings carry, from the top down."""
+    found = cast(tuple[Received, ...], outcome.received)
+    if not found:
+        return ""
+    names = {each.element.global_id: each.element.name for each in found}
+    cases = list(dict.fromkeys(case for each in found for case in each.total))
+    rows = [
+        (
+            safe(each.element.name or each.element.global_id),
+            units.number(each.element.bottom, "length"),
+            *(units.number(each.total.get(case, 0.0), "force") for case in cases),
+            safe(names.get(each.element.on or "") or each.element.on or "-"),
+        )
+        for each in found
+    ]
+    head = ("element", "foot at", *(safe(case) for case in cases), "stands on")
+    below = ("", units.symbol("length"), *[units.symbol("force")] * len(cases), "")
+    title = "Carried by columns, walls and footings (by case, unfactored, own weight left out)"
+    return f"{title}\n" + table(head, below, rows)
 
 
 def _verification_text(outcome: Outcome, units: DisplayUnits) -> str:

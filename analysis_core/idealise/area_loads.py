@@ -53,11 +53,15 @@ def put_area_loads(
     chooser: Chooser,
     case_name: Callable[[str], str],
     log: Log,
-) -> None:
-    """Spread every area load of the model and of the job file."""
+) -> dict[tuple[str, str], float]:
+    """Spread every area load of the model and of the job file.
+
+    Returns what goes straight to walls: N by GlobalId and case.
+    """
+    walls: dict[tuple[str, str], float] = {}
     loads = [*_of_model(building, log), *_of_job(building, settings, chooser, case_name)]
     if not loads:
-        return
+        return walls
     receivers = Receivers(placer.drafts, building.carriers)
     known: dict[tuple[str, str, Spot | None], tuple[list[Receiver], list[Share]]] = {}
     sums: dict[str, _Sum] = {}
@@ -75,11 +79,14 @@ def put_area_loads(
             force = load.intensity * share.total
             if receiver.draft is None:
                 total.walls += force
+                key_of_wall = receiver.name, load.case
+                walls[key_of_wall] = walls.get(key_of_wall, 0.0) + force
             else:
                 total.beams += force
                 _put(load, receiver, share, placer)
     for source, total in sums.items():
         _report(source, total, log)
+    return walls
 
 
 def _of_model(building: Building, log: Log) -> Iterator[_Load]:

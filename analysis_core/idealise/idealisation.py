@@ -92,7 +92,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         return spelled.setdefault(name.casefold(), canonical(name, cases))
 
     put_job_actions(building.members, placer, settings, chooser, table, case_name, log)
-    put_area_loads(building, placer, settings, chooser, case_name, log)
+    walls = put_area_loads(building, placer, settings, chooser, case_name, log)
     things: list[AxisMember | Carrier | Connection] = [
         *building.carriers,
         *building.connections,
@@ -101,6 +101,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
     put_job_movements(placer, settings, chooser, things, case_name, log)
 
     used = [action.case for actions in placer.actions.values() for action in actions]
+    used += [case for _, case in walls]
     cases = with_used(cases, used, settings, log)
     told = {e for f in building.findings if f.slug == "oblique-bending" for e in f.elements}
     lines = _lines(scheme, placer.actions, table, settings, told, log)
@@ -113,6 +114,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         transfers=transfers,
         findings=building.findings + log.findings,
         title=settings.title or building.name,
+        direct=tuple((element, case, force) for (element, case), force in walls.items()),
     )
 
 
