@@ -37,6 +37,8 @@ class Container:
         if not self.zipped and not self.encoding:
             return parts
         text = b"".join(parts)
+        if text == self.text:
+            return [self.stored]
         if self.encoding:
             mark = next(mark for mark, encoding in _UTF16 if encoding == self.encoding)
             text = mark + text.decode("utf-8").encode(self.encoding)

@@ -143,6 +143,8 @@ def test_a_zipped_model_stays_zipped_with_all_that_was_in_it(tmp_path):
         archive.writestr("inner/model.ifc", small_model())
         archive.writestr("notes.txt", "kept")
         archive.comment = b"a remark"
+    writer.post(source, posted, outcome_of())
+    assert posted.read_bytes() == source.read_bytes()  # nothing to write, nothing packed anew
     writer.post(source, posted, OUTCOME)
     assert effects(posted)["SaggingMoment"] == pytest.approx(81.0)
     writer.remove(posted, back)
