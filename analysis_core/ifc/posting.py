@@ -143,6 +143,8 @@ class Posting:
         """The lines of the block, those that stay first."""
         index, cleared = self._index, self._cleared
         yield cleared.kept
+        if not self._elements:
+            return  # not even units, where nothing carries results
         lines = append.Lines(append.first_free(index, cleared.kept), index.newline)
         owner, units = owner_history(index, lines), measures(index, lines)
         sets = SetWriter(lines, self._elements, schema=index.schema, owner=owner, measures=units)
