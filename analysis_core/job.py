@@ -9,7 +9,7 @@ from __future__ import annotations
 import csv
 import json
 import math
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import replace
 from importlib import resources
 from pathlib import Path
@@ -178,7 +178,7 @@ def _settings(data: Mapping[str, Any], text: str) -> Settings:
         display=_display(data.get("display", {})),
         rules=_rules(data.get("rules", {})),
         analysis=Analysis(**_tupled(data.get("analysis", {}))),
-        tolerances=Tolerances(**data.get("tolerances", {})),
+        tolerances=Tolerances(**_sized(data.get("tolerances", {}), "tolerances")),
         beams=BeamRules(**data.get("beams", {})),
         cases=each("cases", _case),
         combinations=each("combinations", _combination),
@@ -228,6 +228,9 @@ def _redistribution(data: Mapping[str, Any], where: str) -> Redistribution:
         if not joint.isdigit():
             raise JobError(f"'{where}.joints' has the key '{joint}'; it must be a joint number.")
         joints[int(joint)] = fraction
+    for fraction in (data.get("fraction", 0.0), *joints.values()):
+        if not 0.0 <= fraction <= 1.0:
+            raise JobError(f"'{where}' redistributes {fraction:.0%}; it must be 0 % to 100 %.")
     return Redistribution(
         fraction=data.get("fraction", 0.0),
         largest=data.get("largest", False),
@@ -376,11 +379,15 @@ def _release(data: Mapping[str, Any], where: str) -> ReleaseSetting:
 def _material(data: Mapping[str, Any], where: str) -> MaterialSetting:
     known = dict(data)
     override = not known.pop("fill_gaps_only", False)
+    sizes = ("elastic_modulus", "shear_modulus", "density", "thermal_expansion")
+    _sized(known, where, sizes, zero=False)
+    _sized(known.get("strength", {}), f"{where}.strength", zero=False)
     return MaterialSetting(**known, override=override)
 
 
 def _section(data: Mapping[str, Any], where: str) -> SectionSetting:
     known = {k: v for k, v in data.items() if k not in ("on", "taper")}
+    _sized(known, where, zero=False)
     taper = []
     for i, pair in enumerate(data.get("taper", ())):
         if len(pair) != 2 or any(isinstance(v, Position) for v in pair):
@@ -396,6 +403,7 @@ def _section(data: Mapping[str, Any], where: str) -> SectionSetting:
 
 def _limits(data: Mapping[str, Any], where: str) -> Limits:
     known = {k: v for k, v in data.items() if k != "on"}
+    _sized(known, where, ("span_ratio", "cantilever_ratio", "absolute"))
     return Limits(on=_selector(data.get("on", {})), **known)
 
 
@@ -453,6 +461,21 @@ def _one_of(data: Mapping[str, Any], keys: tuple[str, ...], where: str) -> str:
         what = " and ".join(found) or "none"
         raise JobError(f"'{where}' needs exactly one of {', '.join(keys)}; it has {what}.")
     return found[0]
+
+
+def _sized(
+    data: Mapping[str, Any], where: str, names: Iterable[str] | None = None, *, zero: bool = True
+) -> Mapping[str, Any]:
+    """Return the data; raise JobError where a size in it is negative, or 0 without ``zero``.
+
+    ``names``: which of the data are sizes; all where None.
+    """
+    for name in data if names is None else names:
+        value = data.get(name, 1.0)
+        if value < 0.0 or (value == 0.0 and not zero):
+            wanted = "must not be negative" if zero else "must be greater than 0"
+            raise JobError(f"'{where}.{name}' is {value:g} (SI); it {wanted}.")
+    return data
 
 
 def _not_negative(stiffness: Mapping[str, float], where: str) -> None:

@@ -143,3 +143,24 @@ def test_our_checker_and_the_general_purpose_one_refuse_the_same_structures():
         except JobError:
             ours = False
         assert ours == validator.is_valid(data), data
+
+
+@pytest.mark.parametrize(
+    ("text", "message"),
+    [
+        ("tolerances: {bearing: -5 m}", "'tolerances.bearing' is -5 (SI); it must not be negative"),
+        ("sections: [{on: {}, inertia: 0 cm4}]", "'sections[0].inertia' is 0 (SI); it must be gre"),
+        ("sections: [{on: {}, area: -2 cm2}]", "'sections[0].area' is -0.0002 (SI)"),
+        ("materials: [{name: S, elastic_modulus: -210 GPa}]", "'materials[0].elastic_modulus'"),
+        ("materials: [{name: S, density: 0 kg/m3}]", "'materials[0].density' is 0 (SI)"),
+        ("materials: [{name: S, strength: {fy: 0 MPa}}]", "'materials[0].strength.fy' is 0 (SI)"),
+        ("limits: [{span_ratio: -3}]", "'limits[0].span_ratio' is -3 (SI)"),
+        ("rules: {redistribution: [{on: {}, fraction: 200 %}]}", "redistributes 200%; it must be"),
+    ],
+)
+def test_a_size_that_cannot_be_is_refused_not_passed_over(text, message):
+    """Zero stands for 'not stated' inside, so that a stated zero would have no effect."""
+    with pytest.raises(JobError) as caught:
+        parse(text)
+
+    assert message in str(caught.value)

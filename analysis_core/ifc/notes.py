@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import replace
 
 from analysis_core.findings import Finding, Severity
@@ -77,6 +78,17 @@ class Notes:
             "lying-column",
             "called columns, which lie flat and are taken as beams",
             "Give them the class IfcBeam.",
+            record,
+        )
+
+    def steep(self, record: Record, steepest: float) -> None:
+        """Note a member too steep to be a beam; ``steepest`` is the sine of the limit."""
+        self.group(
+            "note",
+            "steep-member",
+            f"steeper than {math.degrees(math.asin(steepest)):.0f} degrees and taken as columns: "
+            f"they may carry beams, and are not analysed as beams",
+            "The limit can be changed in the job file (tolerances: beam_slope).",
             record,
         )
 

@@ -162,6 +162,7 @@ class _Reader:
                 self._bearing.add(record, placed, f"{record.ifc_class} ({label})")
         elif laid.rise > self._steepest:
             self._count("taken as columns")
+            self._notes.steep(record, self._steepest)
             self._bearing.add_column(record, placed, laid)
         else:
             self._add_member(record, placed, laid)

@@ -303,6 +303,9 @@ def test_a_steep_beam_is_a_column_and_a_pile_too(tmp_path):
     assert by_name["raker"].end[2] > by_name["raker"].start[2]
     assert by_name["pile"].top == pytest.approx(0.0)
     assert building.counts["taken as columns"] == 2
+    (told,) = [f for f in building.findings if f.slug == "steep-member"]
+    assert len(told.elements) == 2
+    assert "steeper than 60 degrees and taken as columns" in told.message
 
 
 def test_members_are_judged_by_their_role(tmp_path):
