@@ -7,6 +7,7 @@ out, whatever they do between the places.
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import Any
 
@@ -55,23 +56,46 @@ class Survey:
 
 def survey(coefficients: Floats, table: FactorTable, samples: int) -> Survey:
     """Survey polynomials (P, K, C, B) of the parts at ``samples`` places per segment."""
-    degree, segments, count, size = coefficients.shape
-    rows = len(table.names)
+    _, segments, _, size = coefficients.shape
     top, bottom = (np.empty((samples, segments, size)) for _ in range(2))
     found: tuple[list[Stretches], list[Stretches]] = ([], [])
-    width = max(32, NUMBERS // (segments * max(rows, count)))
-    if table.fixed:
-        width = min(1024, max(width, _MANY, 10 * NUMBERS // (degree * segments * rows)))
     workspace = Workspace()
     look = _fixed if table.fixed else _varied
-    for first in range(0, size, width):
-        now = slice(first, first + width)
+    for now in _portions(coefficients, table):
         local = centred(coefficients[..., now])
         for into, stretches in zip(
             found, look(local, table, top[..., now], bottom[..., now], workspace), strict=True
         ):
-            into.append(shifted(stretches, first))
+            into.append(shifted(stretches, now.start))
     return Survey(top, bottom, joined(*found[0]), joined(*found[1]))
+
+
+def values_only(coefficients: Floats, table: FactorTable, samples: int) -> tuple[Floats, Floats]:
+    """Return the envelope at the places (S, K, B) alone, top and bottom, as ``survey`` has it."""
+    _, segments, _, size = coefficients.shape
+    top, bottom = (np.empty((samples, segments, size)) for _ in range(2))
+    workspace = Workspace()
+    for now in _portions(coefficients, table):
+        local, high, low = centred(coefficients[..., now]), top[..., now], bottom[..., now]
+        if not table.fixed:
+            for places, values in at_places(local, samples, workspace):
+                upper, lower = both(np.moveaxis(values, 2, 0), table)
+                high[places], low[places] = np.max(upper, axis=2), np.min(lower, axis=2)
+            continue
+        by = _by_places if local.shape[3] < _MANY else _by_rows
+        by(combined(local, table.high, workspace), high, low, workspace, curved=False)
+    return top, bottom
+
+
+def _portions(coefficients: Floats, table: FactorTable) -> Iterator[slice]:
+    """As many members at a time as stay in the cache."""
+    degree, segments, count, size = coefficients.shape
+    rows = len(table.names)
+    width = max(32, NUMBERS // (segments * max(rows, count)))
+    if table.fixed:
+        width = min(1024, max(width, _MANY, 10 * NUMBERS // (degree * segments * rows)))
+    for first in range(0, size, width):
+        yield slice(first, first + width)
 
 
 def _fixed(

@@ -4,9 +4,10 @@
 
 Prints ratios of medians of one run, in processor time, so that other work on the machine counts
 less.  Preparation (building lines, solving) is outside the timed
-part.  "Diagrams" is the work on arrays once the actions are laid out: combinations, envelope at
-21 stations of moment, shear and deflection, exact extremes.  "Whole" is the public call: laying
-out the actions of every line, the diagrams, the names of what governs, and result objects.
+part.  "At stations" is the envelope of moment, shear and deflection at 21 stations, superposition
+included, once the actions are laid out as arrays; "with exact extremes" adds the largest and least
+of each with place and row; "whole call" is the public one, from lines to result objects with the
+names of what governs.
 """
 
 from __future__ import annotations
@@ -27,6 +28,7 @@ from analysis_core.effects.arrangements import Arrangements, SpanCases, split_by
 from analysis_core.effects.envelopes import envelopes
 from analysis_core.effects.factors import factor_table
 from analysis_core.effects.fields import fields
+from analysis_core.effects.survey import values_only
 from analysis_core.effects.sweep import sweep
 from analysis_core.model import Combination
 from analysis_core.results import LineSolution
@@ -106,16 +108,22 @@ def memory_floor(members: int, combinations: int) -> float:
     return median_time(lambda: (read.copy(), write.copy()))
 
 
-def diagrams(lines, solutions, combinations, arrangements) -> float:
+def diagrams(lines, solutions, combinations, arrangements) -> tuple[float, float]:
+    """Seconds for the envelope at the stations, and for that with the exact extremes."""
     spans = tuple(sorted({m.span for m in lines[0].line.members}))
     table = factor_table(combinations, lines[0].parts, arrangements, spans)
     blocks = list(fields([line.line for line in lines], solutions))
 
-    def work() -> None:
+    def at_stations() -> None:
+        for block in blocks:
+            for effect in (block.moment, block.shear, block.deflection):
+                values_only(effect, table, STATIONS)
+
+    def exact() -> None:
         for block in blocks:
             sweep(block, table, STATIONS)
 
-    return median_time(work)
+    return median_time(at_stations), median_time(exact)
 
 
 def whole(lines, solutions, combinations, arrangements) -> float:
@@ -133,43 +141,51 @@ def forty(rng: np.random.Generator, cases: list[str]) -> list[Combination]:
     ]
 
 
+def show(text: str, seconds: float, remark: str = "") -> None:
+    print(f"{text:52}{1e3 * seconds:10.2f} ms  {remark}")
+
+
 def main(count: int) -> None:
     cases = ["G", "Q", "S", "W1", "W2"]
     lines, solutions = solved_lines(count, 5, cases, [], 1)
     combinations = forty(np.random.default_rng(2), cases)
     floor = memory_floor(5 * count, len(combinations))
-    plain = diagrams(lines, solutions, combinations, Arrangements())
-    plain_whole = whole(lines, solutions, combinations, Arrangements())
+    stations, exact = diagrams(lines, solutions, combinations, Arrangements())
+    plain = whole(lines, solutions, combinations, Arrangements())
     print(f"{count} lines of 5 spans, {STATIONS} stations, medians of {REPEATS}")
-    print(f"memory floor                             {1e3 * floor:9.1f} ms")
-    print(f"row 8  40 combinations, diagrams         {1e3 * plain:9.1f} ms  "
-          f"{plain / floor:6.1f} x floor (goal 30)")  # fmt: skip
-    print(f"       40 combinations, whole            {1e3 * plain_whole:9.1f} ms  "
-          f"{plain_whole / floor:6.1f} x floor")  # fmt: skip
+    show("memory floor", floor)
+    show(
+        "row 8  40 combinations, at stations", stations, f"{stations / floor:.1f} x floor, goal 30"
+    )
+    show("       with exact extremes", exact, f"{exact / floor:.1f} x floor")
+    show("       whole call", plain, f"{plain / floor:.1f} x floor")
     del lines, solutions
 
-    both = [
-        Combination("U1", "strength", {"G": 1.35, "Q": 1.5}, favourable={"Q": 0.0}),
-    ]
+    both = [Combination("U1", "strength", {"G": 1.35, "Q": 1.5}, favourable={"Q": 0.0})]
     lines, solutions = solved_lines(count, 5, ["G", "Q"], ["Q"], 3)
-    every = diagrams(lines, solutions, both, EVERY)
+    every, every_exact = diagrams(lines, solutions, both, EVERY)
     every_whole = whole(lines, solutions, both, EVERY)
-    print(f"row 9  all 32 arrangements, diagrams     {1e3 * every:9.1f} ms  "
-          f"{every / plain:6.2f} x row 8 (goal 0.8)")  # fmt: skip
-    print(f"       all 32 arrangements, whole        {1e3 * every_whole:9.1f} ms  "
-          f"{every_whole / plain_whole:6.2f} x row 8, whole")  # fmt: skip
+    show(
+        "row 9  all 32 arrangements, at stations",
+        every,
+        f"{every / stations:.2f} x row 8, goal 0.8",
+    )
+    show("       with exact extremes", every_exact, f"{every_exact / exact:.2f} x row 8 with them")
+    show("       whole call", every_whole, f"{every_whole / plain:.2f} x row 8 whole")
     del lines, solutions
 
     long = max(50, count // 20)
     lines, solutions = solved_lines(long, 20, ["G", "Q"], ["Q"], 4)
-    every = diagrams(lines, solutions, both, EVERY)
+    every, every_exact = diagrams(lines, solutions, both, EVERY)
     every_whole = whole(lines, solutions, both, EVERY)
-    print(f"row 9  20 spans, 1,048,576 arrangements  {1e3 * every / long:9.3f} ms a line, diagrams"
-          f" (goal 0.2); {1e3 * every_whole / long:.3f} ms whole")  # fmt: skip
+    show(
+        "row 9  20 spans, 1,048,576 arrangements, at stations", every / long, "a line, goal 0.2 ms"
+    )
+    show("       with exact extremes", every_exact / long, "a line")
+    show("       whole call", every_whole / long, "a line")
 
     lines, solutions = solved_lines(1, 5, ["G", "Q"], ["Q"], 5)
-    one = whole(lines, solutions, both, EVERY)
-    print(f"one line of 5 spans alone, whole         {1e3 * one:9.3f} ms (row 10 shares 1 ms)")
+    show("one line of 5 spans alone, whole call", whole(lines, solutions, both, EVERY))
 
 
 if __name__ == "__main__":

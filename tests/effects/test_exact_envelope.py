@@ -18,7 +18,9 @@ from analysis_core.effects.arrangements import (
 from analysis_core.effects.combinations import combine, combine_line
 from analysis_core.effects.envelopes import envelope, envelopes
 from analysis_core.effects.factors import factor_table
+from analysis_core.effects.fields import fields as diagrams
 from analysis_core.effects.stations import stations
+from analysis_core.effects.survey import survey, values_only
 from analysis_core.model import (
     Combination,
     DistributedForce,
@@ -523,3 +525,19 @@ def test_an_action_on_a_joint_belongs_to_the_span_on_its_left():
     (part,) = split_by_span(line, ["Q"], ["Q"]).parts
 
     assert (part.name, part.place, part.span) == ("Q @ span 1", "span 1", 1)
+
+
+def test_values_alone_are_those_of_the_survey():
+    lines = [plain(n) for n in range(3)] * 20
+    split = [split_by_span(line, ["G", "Q"], ["Q"]) for line in lines]
+    solutions = [solve(s.line, s.cases) for s in split]
+    for some, favourable in ((lines[:1], {"Q": 0.0}), (lines, {"Q": 0.0}), (lines, {})):
+        chosen = [replace(c, favourable=favourable) for c in SLAB]
+        shares = EVERY if favourable else Arrangements()
+        table = factor_table(chosen, split[0].parts, shares, (1, 2, 3, 4))
+        for block in diagrams([s.line for s in split[: len(some)]], solutions[: len(some)]):
+            for effect in (block.moment, block.shear, block.deflection):
+                found = survey(effect, table, 21)
+                top, bottom = values_only(effect, table, 21)
+                np.testing.assert_array_equal(top, found.top)
+                np.testing.assert_array_equal(bottom, found.bottom)
