@@ -31,12 +31,8 @@ from analysis_core.ifc.property_sets import (
     RecordWriter,
     SetWriter,
 )
-from analysis_core.ifc.result_groups import (
-    CaseStations,
-    ResultGroups,
-    reaction_id,
-    rewritten_ids,
-)
+from analysis_core.ifc.result_groups import ResultGroups, reaction_id, rewritten_ids
+from analysis_core.ifc.section_forces import CaseStations
 from analysis_core.ifc.set_contents import contents_in_block, timeless
 from analysis_core.ifc.step_index import StepIndex
 from analysis_core.ifc.support_reactions import support_reactions, write_reactions

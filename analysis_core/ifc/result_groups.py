@@ -14,7 +14,7 @@ results.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -29,15 +29,15 @@ from analysis_core.ifc.measures import Measures
 from analysis_core.ifc.ours import RESULT_TYPE
 from analysis_core.ifc.paths import Measures as ShapeMeasures
 from analysis_core.ifc.placements import Placements
+from analysis_core.ifc.section_forces import CaseStations, Sample, SectionForces
 from analysis_core.ifc.step_index import StepIndex
 from analysis_core.ifc.step_tokens import reference
 from analysis_core.ifc.step_values import decoded, label, real, references, string
 from analysis_core.ifc.unreadable import UnreadableShapeError
 from analysis_core.model import Case
-from analysis_core.results import Floats, LineResult, Outcome, Stations
+from analysis_core.results import LineResult, Outcome
 
 Vector = tuple[float, float, float]
-CaseStations = Callable[[LineResult], Stations]
 
 _NODES = frozenset({"IFCSTRUCTURALPOINTCONNECTION"})
 _MEMBERS = frozenset({"IFCSTRUCTURALCURVEMEMBER", "IFCSTRUCTURALCURVEMEMBERVARYING"})
@@ -103,10 +103,9 @@ class ResultGroups:
         self._lines = lines
         self._owner = owner
         self._measures = measures
-        self._stations = stations
+        self._forces = SectionForces(stations)
         self._retained = retained
         self._models = analysis_models(index)
-        self._sampled: dict[int, Stations] = {}
 
     def write(
         self,
@@ -237,15 +236,15 @@ class ResultGroups:
     def _curve_reaction(
         self, element: str, parts: Sequence[Part], case: Case, item: int
     ) -> int | None:
-        samples: list[tuple[float, str]] = []
+        samples: list[Sample] = []
         for part in sorted(parts, key=lambda p: p.start):
             if part.result is parts[0].result:  # two lines would give values in two planes
-                samples += self._samples(part, case.name)
+                samples += self._forces.samples(part, case.name)
         if len(samples) < 2:
             return None
         length = self._measures.units.to_si("LENGTHUNIT")
         places = ",".join(f"({real(x / length)})" for x, _ in samples)
-        values = self._lines.shared_list(body for _, body in samples)
+        values = self._lines.shared_list(self._force_text(forces) for _, forces in samples)
         load = self._lines.add(
             f"IFCSTRUCTURALLOADCONFIGURATION('Section forces',{values},({places}))"
         )
@@ -253,41 +252,6 @@ class ResultGroups:
         return self._activity(
             "IFCSTRUCTURALCURVEREACTION", element, case, item, load, f".LOCAL_COORDS.,.{shape}."
         )
-
-    def _samples(self, part: Part, case: str) -> list[tuple[float, str]]:
-        """Section forces of one member, in the direction of its element."""
-        solution, member = part.result.solution, part.member
-        if solution is None or case not in solution.cases:
-            return []
-        number = solution.cases.index(case)
-        start, end = (float(n) for n in solution.axial[number, member.id])
-        x, shear, moment = self._along(part, number)
-        if not np.isfinite([*x, *shear, *moment, start, end]).all():
-            return []
-        last = len(x) - 1
-        samples = []
-        for i, s in enumerate(x.tolist()):
-            # Between the ends the axial force is only known where it does not change.
-            axial = start if i == 0 or start == end else end if i == last else None
-            body = self._force_text((axial, None, shear[i], None, moment[i], None))
-            samples.append((part.position(s), body))
-        return samples[::-1] if member.reversed_ else samples
-
-    def _along(self, part: Part, number: int) -> tuple[Floats, Floats, Floats]:
-        """Places on a member with shear and moment there; the ends where nothing else is known."""
-        result, member = part.result, part.member
-        assert result.solution is not None  # only solved parts come here
-        if self._stations is None:
-            moments = result.solution.end_moments[number, member.id]
-            shears = result.solution.end_shears[number, member.id]
-            return np.array([0.0, member.length]), shears, np.array([moments[0], -moments[1]])
-        if id(result) not in self._sampled:
-            self._sampled[id(result)] = self._stations(result)
-        found = self._sampled[id(result)]
-        row = found.names.index(result.solution.cases[number])
-        return (
-            found.x[member.id], found.shear[row, member.id], found.moment[row, member.id]
-        )  # fmt: skip
 
     # -- text --------------------------------------------------------------------------------
 

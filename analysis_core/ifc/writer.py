@@ -19,7 +19,7 @@ from analysis_core.errors import IfcWriteError
 from analysis_core.ifc import atomic, clearing
 from analysis_core.ifc.container import read_container
 from analysis_core.ifc.posting import Posting, PostReport, Progress
-from analysis_core.ifc.result_groups import CaseStations
+from analysis_core.ifc.section_forces import CaseStations
 from analysis_core.results import Outcome
 
 __all__ = ["PostReport", "RemoveReport", "post", "remove"]
