@@ -150,6 +150,15 @@ def _balance_options(commands: Any) -> None:
         help="also check the resistance of the members, clause by clause",
     )  # fmt: skip
     command.add_argument(
+        "--lightest", metavar="TABLE",
+        help="instead: the lightest section that suffices for the chosen lines, or for each kind; "
+        "TABLE is 'model', 'job' (the section table of the job file) or a file with such a table",
+    )  # fmt: skip
+    command.add_argument(
+        "--alike", action="store_true",
+        help="with --lightest: one section for all lines of the same section and material",
+    )  # fmt: skip
+    command.add_argument(
         "--reactions", metavar="FILE.csv",
         help="write the reactions of every support and case as a spreadsheet",
     )  # fmt: skip
@@ -261,6 +270,8 @@ def _survey(options: argparse.Namespace) -> int:
 
 def _balance(options: argparse.Namespace) -> int:
     settings = _settings(options)
+    if options.lightest:
+        return _lightest(options, settings)
     outcome = pipeline.run(options.model, settings, progress=_progress(), only=options.line)
     units = display_units(settings.display.system, settings.display.units)
     text = balance_text(outcome, units)
@@ -284,6 +295,23 @@ def _balance(options: argparse.Namespace) -> int:
         text,
     )
     return _status(outcome)
+
+
+def _lightest(options: argparse.Namespace, settings: Settings) -> int:
+    from analysis_core.choosing_report import choices_data, choices_text
+
+    choices = pipeline.lightest(
+        options.model, options.lightest, settings, marks=options.line, alike=options.alike,
+        progress=_progress(),
+    )  # fmt: skip
+    units = display_units(settings.display.system, settings.display.units)
+    head = {"format": "spanledger-choices", "version": 1}
+    _put(
+        options,
+        lambda: {**head, "choices": choices_data(choices)},
+        choices_text(choices, units),
+    )
+    return OK if all(choice.chosen for choice in choices) else INCOMPLETE
 
 
 def _post(options: argparse.Namespace) -> int:

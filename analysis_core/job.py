@@ -87,6 +87,15 @@ def parse(text: str, *, folder: Path | None = None) -> Settings:
     return _settings(checked, text)
 
 
+def with_section_table(settings: Settings, path: Path) -> Settings:
+    """Return settings with the section table of a file in the place of their own.
+
+    Raises JobError.
+    """
+    rows = _table_of(path.name, path.resolve().parent)
+    return replace(settings, section_table=table_sections(rows), section_table_file=path.name)
+
+
 def _text(path: Path, what: str) -> str:
     try:
         raw = path.read_bytes()

@@ -36,6 +36,7 @@ from analysis_core.units import display_units
 
 if TYPE_CHECKING:
     from analysis_core.checking import MemberChecks
+    from analysis_core.choosing import Choice
     from analysis_core.ifc.updating import Change
     from analysis_core.ifc.writer import PostReport, RemoveReport
     from analysis_core.posted_states import PostedState
@@ -332,6 +333,47 @@ def checks(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks
     return check_lines(outcome, settings)
 
 
+def lightest(
+    path: str | Path,
+    table: str,
+    settings: Settings | None = None,
+    *,
+    marks: Sequence[str] = (),
+    alike: bool = False,
+    progress: Progress | None = None,
+) -> list[Choice]:
+    """Return the lightest section for lines, from a table; nothing is written.
+
+    ``table``: "model" for the profiles of the model, "job" for the section table of the job file,
+    or a file with one (.csv, .yaml).  ``marks``: the lines, each by itself or, if ``alike``, with
+    all of its section and material; every kind of lines where empty.  Raises IfcReadError,
+    JobError.
+    """
+    from analysis_core import choosing
+    from analysis_core.ifc import candidates
+    from analysis_core.job import with_section_table
+
+    settings = settings or Settings()
+    if table not in ("model", "job"):
+        settings = with_section_table(settings, Path(table))
+    found = survey(path, settings, progress=progress)
+    _check_marks(found.model, marks)
+    source = ifc_source.open_model(path)
+    known = (
+        candidates.of_model(source) if table == "model" else candidates.of_table(source, settings)
+    )
+    where = {"model": f"'{found.file}'", "job": "The section table of the job file"}
+    choosing.check_candidates(known, where.get(table, f"'{table}'"))
+    memory = Memory()
+
+    def solved(model: LineModel) -> Outcome:
+        asked = replace(found, model=model, standing=())
+        return solve(asked, settings, memory=memory)
+
+    groups = choosing.kinds(found.model, marks, alike=alike)
+    return choosing.choose_lightest(found.model, settings, known, groups, solved)
+
+
 def document(
     outcome: Outcome,
     *,
@@ -496,7 +538,7 @@ def rules_document(
     from analysis_core.checks_report import figures_data
 
     head = {"format": "spanledger-rules", "version": 1}
-    if name in TITLES:
+    if name is not None and name in TITLES:
         return {**head, "checks": figures_data(name, replaced or {})}
     if name is not None:
         return {**head, "set": asdict(rules.load(name, replace=replaced))}
