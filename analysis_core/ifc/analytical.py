@@ -26,6 +26,7 @@ from analysis_core.ifc.analytical_notes import (
     titled,
 )
 from analysis_core.ifc.analytical_properties import MemberProperties
+from analysis_core.ifc.analytical_surfaces import SurfaceReader
 from analysis_core.ifc.analytical_targets import Target, chained
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.frames import Frame
@@ -95,7 +96,14 @@ class _Reader:
         actions = list(self.file.by_type("IfcStructuralAction"))
         groups = GroupReader(self.file, [action.id() for action in actions], self.notes)
         cases, combinations, cases_of = groups.read(self._frames_of_groups())
-        placed = ActionReader(
+        surfaces = SurfaceReader(
+            self.topology,
+            self.source.units,
+            self.shared,
+            self.notes,
+            self.file.by_type("IfcStructuralSurfaceMember"),
+        )
+        reader = ActionReader(
             self.topology,
             self.source.units,
             targets,
@@ -103,7 +111,9 @@ class _Reader:
             self.settings.tolerances,
             self.notes,
             self.source.schema,
-        ).read(actions, self._targets_of_actions(), cases_of)
+            surfaces,
+        )
+        placed = reader.read(actions, self._targets_of_actions(), cases_of)
         self._report_loose(actions, cases_of)
         self._report_models()
         self.notes.extend(self.source.units.findings())
@@ -115,6 +125,8 @@ class _Reader:
             connections=tuple(node.connection for node in nodes.values()),
             attachments=tuple(attachments),
             actions=tuple(placed),
+            areas=tuple(surfaces.areas.values()),
+            area_actions=tuple(reader.area_actions),
             cases=tuple(cases),
             combinations=tuple(combinations),
             findings=self.notes.findings,
@@ -276,7 +288,6 @@ class _Reader:
                 others,
             )
         for ifc_class, slug, noun in (
-            ("IfcStructuralSurfaceMember", "surface-member", "surface members"),
             ("IfcStructuralSurfaceConnection", "surface-connection", "surface connections"),
         ):
             ids = [global_id(entity) for entity in self.file.by_type(ifc_class)]

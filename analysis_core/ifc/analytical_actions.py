@@ -5,7 +5,13 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping, Sequence
 from typing import Any
 
-from analysis_core.building import AxisAction, BuildingAction, NodeAction, TemperatureAction
+from analysis_core.building import (
+    AreaAction,
+    AxisAction,
+    BuildingAction,
+    NodeAction,
+    TemperatureAction,
+)
 from analysis_core.ifc import frames
 from analysis_core.ifc.analytical_action_notes import ActionNotes
 from analysis_core.ifc.analytical_conditions import Node
@@ -28,6 +34,7 @@ from analysis_core.ifc.analytical_notes import (
     name_of,
     titled,
 )
+from analysis_core.ifc.analytical_surfaces import SurfaceReader
 from analysis_core.ifc.analytical_targets import Target, across, axes_of, both, cut, times, turned
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.file_units import FileUnits
@@ -54,7 +61,10 @@ class ActionReader:
         tolerances: Tolerances,
         notes: Notes,
         schema: str,
+        surfaces: SurfaceReader,
     ) -> None:
+        self.area_actions: list[AreaAction] = []
+        self._surfaces = surfaces
         self._topology = topology
         self._units = units
         self._members = members
@@ -96,10 +106,10 @@ class ActionReader:
         if is_kind(action, "IfcStructuralSurfaceAction") or is_kind(
             action, "IfcStructuralPlanarAction"
         ):
-            self._report.left_out(
-                action, "it acts on a surface, and surface actions are not spread to members yet",
-                item, slug="surface-action",
-            )  # fmt: skip
+            try:
+                self.area_actions += self._surfaces.action(action, item, cases)
+            except LoadError as error:
+                self._report.left_out(action, str(error), item, slug="surface-action")
             return []
         if load is None:
             self._report.left_out(action, "it states no load", item)

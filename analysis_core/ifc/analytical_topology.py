@@ -74,6 +74,26 @@ class Topology:
                 return frames.point(place, *local)
         return None
 
+    def face(self, product: Any, frame: Frame) -> list[tuple[Chain, bool]]:
+        """Return the loops of a product's face in the world, and whether each is the outer one.
+
+        Empty where it has no face that is bounded by loops of straight edges.
+        """
+        for item, place in _placed_items(product, frame, self):
+            if is_kind(item, "IfcFace"):
+                return [self._bound(bound, place) for bound in item[0] or ()]
+        return []
+
+    def _bound(self, bound: Any, place: Frame) -> tuple[Chain, bool]:
+        loop, outer = bound[0], is_kind(bound, "IfcFaceOuterBound")
+        if is_kind(loop, "IfcPolyLoop"):
+            points = [self._cartesian(point) for point in loop[0]]
+            return tuple(frames.point(place, *p) for p in points), outer
+        chain, curved = self._joined(loop, place)
+        if curved:
+            raise UnreadableShapeError("an edge of its face is curved")
+        return chain[:-1] if len(chain) > 1 and chain[0] == chain[-1] else chain, outer
+
     def has_shape(self, product: Any) -> bool:
         """Whether the product has a representation of its own."""
         shape = product.get_argument(6)

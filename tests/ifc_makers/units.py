@@ -45,6 +45,7 @@ UNIT_SETS = {
 # Derived units: exponents of force, length, angle, mass, temperature.
 DERIVED = {
     "LINEARFORCEUNIT": {"FORCEUNIT": 1, "LENGTHUNIT": -1},
+    "PLANARFORCEUNIT": {"FORCEUNIT": 1, "LENGTHUNIT": -2},
     "LINEARMOMENTUNIT": {"FORCEUNIT": 1, "LENGTHUNIT": 0},
     "TORQUEUNIT": {"FORCEUNIT": 1, "LENGTHUNIT": 1},
     "LINEARSTIFFNESSUNIT": {"FORCEUNIT": 1, "LENGTHUNIT": -1},
