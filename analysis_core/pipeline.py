@@ -15,6 +15,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from analysis_core import idealise
+from analysis_core.area_reduction import reduced_by_area
 from analysis_core.building import Building
 from analysis_core.combining import choose, with_combinations
 from analysis_core.distribution.record import DistributionRecord, distribute
@@ -186,9 +187,10 @@ def solve(
 ) -> Outcome:
     """Solve what a survey found; with a ``memory``, only what it does not know yet."""
     rules, assumed = choose(found.model, settings)
-    model = with_combinations(found.model, rules)
+    reduced, by_area = reduced_by_area(found.model, settings, rules.rule_set)
+    model = with_combinations(reduced, rules)
     results, failed = solve_lines(model, rules, settings, progress or _silent, memory)
-    findings = (*assumed, *failed)
+    findings = (*assumed, *by_area, *failed)
     if only:
         results = tuple(r for r in results if r.line.mark in only)
     return Outcome(
