@@ -11,6 +11,7 @@ from analysis_core.idealise.lines import line_direction, runs_forward
 from analysis_core.idealise.network import Limb, Network
 from analysis_core.idealise.plane_groups import Group
 from analysis_core.idealise.planes import Plane, view_axis
+from analysis_core.idealise.snapping import snap
 from analysis_core.idealise.vectors import (
     Vector,
     along,
@@ -122,6 +123,7 @@ def _frame(network: Network, limbs: list[Limb], group: Group, tolerances: Tolera
     draft = Draft(plane, "frame", joints, [])
     for limb in limbs:
         draft.bars.extend(_frame_bars(limb, draft, joint_of, tolerances))
+    snap(draft)
     draft.bars.sort(key=lambda bar: _bar_order(draft, bar))
     return draft
 
