@@ -217,6 +217,10 @@ def _reconcile_options(commands: Any) -> None:
     )
     command.add_argument("--csv", metavar="FILE", help="write the changes as a spreadsheet")
     command.add_argument(
+        "--line", metavar="MARK", action="append", default=[],
+        help="only this line, by its mark before or after (may be repeated)",
+    )  # fmt: skip
+    command.add_argument(
         "-o", "--output", metavar="OUT.ifc", help="post the results into a copy of AFTER.ifc"
     )
 
@@ -402,16 +406,23 @@ def _tell_posted(report: PostReport, target: Path) -> None:
 
 def _reconcile(options: argparse.Namespace) -> int:
     from analysis_core import revision_report as report
+    from analysis_core.revision import of_lines
 
     settings = _settings(options)
     found = pipeline.reconcile(options.before, options.after, settings, progress=_progress())
+    found = of_lines(found, options.line)
+    chosen = [mark for change in found.changes for mark in change.after] if options.line else []
     units = display_units(settings.display.system, settings.display.units)
+    if options.output and options.line and not chosen:
+        raise JobError(
+            f"'{options.after}' has none of the chosen lines any more; leave out -o or --line."
+        )
     if options.output:
-        _post_to(found.after, options.after, Path(options.output))
+        _post_to(found.after, options.after, Path(options.output), only=chosen)
     if options.csv:
         _write(Path(options.csv), report.changes_csv(found, units))
     _put(options, lambda: report.changes_document(found), report.changes_text(found, units))
-    return _status(found.after)
+    return _status(pipeline.of_lines(found.after, chosen))
 
 
 def _sheet(options: argparse.Namespace) -> int:

@@ -7,11 +7,13 @@ another is seen as such and not as gone and new.
 
 from __future__ import annotations
 
+import difflib
 import math
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
+from analysis_core.errors import JobError
 from analysis_core.fingerprints import RECEIVES, differences
 from analysis_core.model import Line, Point
 from analysis_core.results import LineResult, Outcome
@@ -84,6 +86,24 @@ def reconcile(before: Outcome, after: Outcome, *, solved_again: Sequence[str]) -
     ]
     changes.sort(key=lambda c: (c.state == "unchanged", -c.largest, c.after or c.before))
     return Reconciliation(before, after, tuple(changes), renamed, tuple(solved_again))
+
+
+def of_lines(found: Reconciliation, marks: Sequence[str]) -> Reconciliation:
+    """Return the changes of these lines alone (marks before or after); all where there are none.
+
+    Raises JobError for a mark that neither revision has.
+    """
+    if not marks:
+        return found
+    known = sorted({mark for change in found.changes for mark in (*change.before, *change.after)})
+    for mark in marks:
+        if mark not in known:
+            near = difflib.get_close_matches(mark, known, n=1, cutoff=0.0)
+            hint = f"; the nearest is '{near[0]}'" if near else "; they have no lines"
+            raise JobError(f"Neither revision has a line '{mark}'{hint}.")
+    wanted = set(marks)
+    chosen = tuple(c for c in found.changes if wanted & {*c.before, *c.after})
+    return replace(found, changes=chosen)
 
 
 def marks_before(before: Outcome, after: Iterable[Line]) -> dict[str, str]:

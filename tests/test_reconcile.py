@@ -196,3 +196,24 @@ def test_the_command_tells_writes_and_posts(tmp_path, capsys):
     rows = (tmp_path / "c.csv").read_text(encoding="utf-8").splitlines()
     assert len(rows) == 1 + len(data["changes"])
     assert ifcopenshell.open(tmp_path / "posted.ifc").by_type("IfcPropertySet")
+
+
+def test_the_command_keeps_to_the_chosen_lines(tmp_path, capsys):
+    after, posted = revised(tmp_path, deeper), tmp_path / "posted.ifc"
+    arguments = ["reconcile", str(PHYSICAL), str(after), "--json", "-", "-o", str(posted)]
+    assert main(arguments[:5]) == 0
+    everything = json.loads(capsys.readouterr().out)["changes"]
+    mark = next(c["after"][0] for c in everything if c["state"] == "changed")
+
+    assert main([*arguments, "--line", mark]) == 0
+
+    (change,) = json.loads(capsys.readouterr().out)["changes"]
+    assert change["after"] == [mark]
+    labels = {
+        p.NominalValue.wrappedValue
+        for p in ifcopenshell.open(posted).by_type("IfcPropertySingleValue")
+        if p.Name == "LineMark"
+    }
+    assert labels == {mark}
+    assert main([*arguments[:3], "--line", "X-99"]) == 2
+    assert "has a line 'X-99'; the nearest is" in capsys.readouterr().err
