@@ -2,21 +2,23 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import replace
 
-from analysis_core.checking import MemberChecks, check_line
+from analysis_core.assumptions import assumptions_part
+from analysis_core.checking import DEFLECTION_LIMIT, MemberChecks, check_line
 from analysis_core.distribution.record import distribute
 from analysis_core.effects.states import State, state_line
 from analysis_core.errors import AnalysisError
 from analysis_core.fixed_end_rows import fixed_end_rows
 from analysis_core.line_details import detail_of
-from analysis_core.model import LineModel
 from analysis_core.record_rows import closing_note, record_tables
-from analysis_core.results import LineResult
+from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
 from analysis_core.sheet.checks import NOTE, line_checks
 from analysis_core.sheet.details import deflections, redistribution, support_moments
 from analysis_core.sheet.distribution import distribution, fixed_ends
+from analysis_core.sheet.document import sheet
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.line_section import member_name
 from analysis_core.units import DisplayUnits
@@ -27,6 +29,35 @@ WORKED_ONCE = (
     "The working of each check is written down for the member of a section that uses most of its "
     "resistance; the others follow the same formulas."
 )
+
+
+def calculation_sheet(outcome: Outcome, settings: Settings, units: DisplayUnits, date: str) -> str:
+    """Return the whole sheet as HTML text."""
+    found = {
+        result.line.mark: check_line(result, outcome.model, settings)
+        for result in outcome.lines
+        if result.status == "balanced"
+    }
+
+    def working(result: LineResult) -> list[Markup]:
+        return distribution_parts(result, units)
+
+    def checks(result: LineResult) -> list[Markup]:
+        return detail_parts(result, units) + check_parts(
+            result, found.get(result.line.mark, []), units
+        )
+
+    return sheet(
+        outcome, units, title=settings.title, date=date, working=working, checks=checks,
+        uses={mark: use for mark, each in found.items() if (use := _largest_use(each))},
+        assumed=assumptions_part(outcome, settings, units),
+    )  # fmt: skip
+
+
+def _largest_use(found: Sequence[MemberChecks]) -> tuple[float, str] | None:
+    made = [each.worst for each in found if each.worst is not None]
+    worst = max(made, key=lambda check: check.use, default=None)
+    return None if worst is None else (worst.use, worst.name)
 
 
 def distribution_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
@@ -61,10 +92,10 @@ def detail_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
 
 
 def check_parts(
-    result: LineResult, model: LineModel, settings: Settings, units: DisplayUnits
+    result: LineResult, found: Sequence[MemberChecks], units: DisplayUnits
 ) -> list[Markup]:
-    """Return the checks of the members of a line."""
-    found = _worked_once(result, check_line(result, model, settings))
+    """Return the checks of the members of a line; deflections have a table of their own."""
+    found = _worked_once(result, [_without_limits(each) for each in found])
     if not found:
         return []
     members = [
@@ -75,7 +106,11 @@ def check_parts(
     return [tag("h3", "Member checks"), *parts, *notes]
 
 
-def _worked_once(result: LineResult, found: list[MemberChecks]) -> list[MemberChecks]:
+def _without_limits(each: MemberChecks) -> MemberChecks:
+    return replace(each, checks=tuple(c for c in each.checks if c.name != DEFLECTION_LIMIT))
+
+
+def _worked_once(result: LineResult, found: Sequence[MemberChecks]) -> list[MemberChecks]:
     """Keep the working of each check for the member of a section that it is closest for."""
     worst: dict[tuple[str, str], tuple[float, int]] = {}
     for each in found:

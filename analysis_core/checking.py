@@ -29,6 +29,7 @@ TITLES: Mapping[str, str] = {
     "aci-318-19": "ACI 318-19, concrete",
     "en-1995-1-1": "EN 1995-1-1:2004 with A1 and A2, timber",
 }
+DEFLECTION_LIMIT = "deflection limit"
 _TIMBER = "en-1995-1-1"
 _DEFLECTION_NOT_COVERED = (
     "Elastic, from the rigidities as modelled; cracking and creep are not covered here."
@@ -151,7 +152,7 @@ def _deflections(result: LineResult, member: Member) -> list[Check]:
                + (f", less the camber of {1e3 * found.camber:g} mm" if found.camber else "")
                )  # fmt: skip
         out.append(
-            w.check("deflection limit", found.rule, demand=value, resistance=found.limit,
+            w.check(DEFLECTION_LIMIT, found.rule, demand=value, resistance=found.limit,
                     quantity="deflection", x=worst.x, source=worst.source,
                     not_covered=_DEFLECTION_NOT_COVERED)
         )  # fmt: skip

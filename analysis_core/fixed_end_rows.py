@@ -33,7 +33,7 @@ def fixed_end_rows(line: Line, units: DisplayUnits) -> list[tuple[str, str, str,
                 continue
             rows.append((
                 f"{member.start}-{member.end}",
-                _what(action, units),
+                _what(member, action, units),
                 _formula(member, action, units),
                 units.number(found.start_moment, "moment"),
                 units.number(found.end_moment, "moment"),
@@ -41,14 +41,14 @@ def fixed_end_rows(line: Line, units: DisplayUnits) -> list[tuple[str, str, str,
     return rows
 
 
-def _what(action: MemberAction, units: DisplayUnits) -> str:
+def _what(member: Member, action: MemberAction, units: DisplayUnits) -> str:
     match action:
         case DistributedForce():
             ends = [_value(action, action.start), _value(action, action.end)]
             size = units.number(ends[0], "line load")
             if abs(ends[0] - ends[1]) > 1e-9 * max(abs(e) for e in ends):
                 size += f" to {units.number(ends[1], 'line load')}"
-            return f"{size} {units.symbol('line load')}{_stretch(action, units)}"
+            return f"{size} {units.symbol('line load')}{_stretch(member, action, units)}"
         case PointForce():
             place = units.text(action.position, "length")
             return f"{units.text(action.transverse, 'force')} at {place}"
@@ -59,7 +59,9 @@ def _what(action: MemberAction, units: DisplayUnits) -> str:
             return f"curvature {action.curvature:.3e} 1/m"
 
 
-def _stretch(action: DistributedForce, units: DisplayUnits) -> str:
+def _stretch(member: Member, action: DistributedForce, units: DisplayUnits) -> str:
+    if action.start <= 1e-9 and action.end >= member.length - 1e-9:
+        return " all along"
     start, end = units.number(action.start, "length"), units.text(action.end, "length")
     return f" from {start} to {end}"
 

@@ -41,7 +41,6 @@ if TYPE_CHECKING:
     from analysis_core.ifc.updating import Change
     from analysis_core.ifc.writer import PostReport, RemoveReport
     from analysis_core.posted_states import PostedState
-    from analysis_core.sheet.html import Markup
 
 Progress = Callable[[str, float], None]
 
@@ -432,22 +431,11 @@ def of_lines(outcome: Outcome, marks: Sequence[str]) -> Outcome:
 
 def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
-    from analysis_core.calculation import check_parts, detail_parts, distribution_parts
-    from analysis_core.sheet.document import sheet as write_sheet
+    from analysis_core.calculation import calculation_sheet
 
     units = display_units(settings.display.system, settings.display.units)
     today = date or datetime.now().date().isoformat()
-
-    def working(result: LineResult) -> list[Markup]:
-        return distribution_parts(result, units)
-
-    def checks(result: LineResult) -> list[Markup]:
-        more = detail_parts(result, units)
-        return more + check_parts(result, outcome.model, settings, units)
-
-    return write_sheet(
-        outcome, units, title=settings.title, date=today, working=working, checks=checks
-    )
+    return calculation_sheet(outcome, settings, units, today)
 
 
 def reactions_csv(outcome: Outcome, settings: Settings) -> str:

@@ -50,7 +50,7 @@ class Reader(HTMLParser):
     def handle_data(self, data):
         if "caption" in self.open:
             self.captions.append(data)
-        if self.open and self.open[-1] in ("td", "th"):
+        if {"td", "th"} & set(self.open):
             self.tables[-1][1][-1][1][-1] += data
 
 
@@ -173,3 +173,76 @@ def test_units_are_those_of_the_job_file():
 
     assert "kip·ft" in text
     assert "kN·m" not in text
+
+
+FRAME = Path(__file__).resolve().parents[2] / "shared/ifc/structural/S14_rule_groups_ifc4x3.ifc"
+
+
+def test_symbols_have_their_subscripts_and_numbers_stand_between_signs():
+    from analysis_core.checks.working import Step
+    from analysis_core.sheet.symbols import formula, numbers, symbols
+    from analysis_core.units import display_units
+
+    metric = display_units("metric", {})
+    step = Step(
+        "M_c,Rd", "{W_pl} {f_y} / {gamma_M0}", 2.0, "moment", "",
+        (("W_pl", 628.4e-6, "section modulus"), ("f_y", 355e6, "stress"), ("gamma_M0", 1.0, "")),
+    )  # fmt: skip
+    assert symbols("M_c,Rd").text == "M<sub>c,Rd</sub>"
+    assert symbols("χ_LT, λ_LT").text == "χ<sub>LT</sub>, λ<sub>LT</sub>"
+    assert symbols("<b>_x").text == "&lt;b&gt;_x"
+    assert formula(step).text == "W<sub>pl</sub> f<sub>y</sub> / γ<sub>M0</sub>"
+    assert numbers(step, metric) == "628.4 cm³ · 355.0 MPa / 1"
+
+
+def test_the_summary_names_the_largest_use_of_each_line(outcome, read):
+    from analysis_core.checking import check_lines
+
+    (rows,) = [r for _, r in read.tables if r[0][1] and r[0][1][0] == "Line"]
+    uses = {cells[0]: cells[-2] for _, cells in rows[2:]}
+    for mark, found in check_lines(outcome, JOB).items():
+        worst = max(each.worst.use for each in found if each.worst)
+        assert uses[mark] == f"{worst:.2f}"
+
+
+def test_assumptions_are_listed_with_who_settled_them(read):
+    (rows,) = [r for _, r in read.tables if r[0][1][:2] == ["Subject", "Taken as"]]
+    settled = {cells[0]: (cells[1], cells[2]) for _, cells in rows[1:]}
+    assert settled["Arrangements of actions"][1] == "job file"
+    assert settled["Spans"] == ("between the axes of the bearings", "default of the program")
+    materials = {c[0] for _, r in read.tables if r[0][1][:2] == ["Material", "Kind"] for _, c in r}
+    assert {"Concrete C30/37", "Steel S355"} <= materials
+
+
+@pytest.mark.skipif(not FRAME.exists(), reason="the shared models are not here")
+def test_a_frame_is_drawn_to_scale_as_it_stands():
+    job = parse('materials: [{name: "ASTM A36", elastic_modulus: 29000 ksi}]')
+    frame = pipeline.run(FRAME, job)
+    text = pipeline.sheet(frame, job, date="x")
+
+    drawing = text[text.index("Elevation, to scale") :]
+    drawing = drawing[: drawing.index("</svg>")]
+    lines = re.findall(r'<line x1="([\d.]+)" y1="([\d.]+)" x2="([\d.]+)" y2="([\d.]+)" '
+                       r'class="member"/>', drawing)  # fmt: skip
+    line = frame.lines[0].line
+    assert len(lines) == len(line.members)
+    scales = []
+    for drawn, member in zip(lines, line.members, strict=True):
+        x1, y1, x2, y2 = map(float, drawn)
+        a, b = line.joints[member.start], line.joints[member.end]
+        scales.append(((x2 - x1) ** 2 + (y2 - y1) ** 2) ** 0.5 / member.length)
+        assert (y1 - y2) == pytest.approx(scales[-1] * (b.z - a.z), abs=0.1)
+    assert max(scales) == pytest.approx(min(scales), rel=1e-3)
+
+
+def test_a_line_that_failed_says_why_and_the_others_are_there():
+    line = next(iter(pipeline.survey(MODEL, JOB).model.lines))
+    broken = replace(line, mark="X-01", fault="its section could not be read.")
+    survey = pipeline.survey(MODEL, JOB)
+    model = replace(survey.model, lines=(*survey.model.lines, broken))
+    outcome = pipeline.solve(replace(survey, model=model), JOB)
+
+    text = pipeline.sheet(outcome, JOB, date="x")
+
+    assert "This line was not analysed: its section could not be read." in text
+    assert "FF-01, First floor" in text

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-import re
-from collections.abc import Callable, Sequence
+import math
+from collections.abc import Sequence
 
 from analysis_core.checks.working import Check, Step
 from analysis_core.sheet.html import Markup, join, tag
+from analysis_core.sheet.symbols import formula, numbers, symbols, value_text
 from analysis_core.sheet.table import table
 from analysis_core.units import DisplayUnits
 
@@ -59,50 +60,41 @@ def _row(check: Check, units: DisplayUnits) -> tuple[Markup | str, ...]:
         check.name,
         _value(abs(check.demand), check.quantity, units),
         _value(check.resistance, check.quantity, units),
-        f"{check.use:.3f}",
-        units.number(check.x, "length"),
+        f"{check.use:.3f}" if math.isfinite(check.use) else "∞",
+        units.number(check.x, "length") if check.source else "–",
         result,
-        f"{check.clause} {_UNCONFIRMED}",
+        f"{check.clause}\xa0{_UNCONFIRMED}",
     )
 
 
 def _working(name: str, check: Check, units: DisplayUnits) -> Markup:
     items = [tag("li", _step(step, units)) for step in check.steps]
     governed = f", {check.source}" if check.source else ""
-    closing = tag("p", check.not_covered, class_="verification") if check.not_covered else ""
-    return join(
-        tag("p", f"{check.name} of {name}{governed}:", class_="working"),
+    closing = tag("p", check.not_covered, class_="aside") if check.not_covered else ""
+    return tag(
+        "div",
+        tag("p", f"{check.name[0].upper()}{check.name[1:]}, {name}{governed}", class_="working"),
         tag("ol", items, class_="steps"),
         closing,
-    )  # fmt: skip
+        class_="keep",
+    )
 
 
 def _step(step: Step, units: DisplayUnits) -> Markup:
-    parts: list[Markup | str] = [tag("span", step.symbol, class_="symbol")]
+    parts: list[Markup | str] = [tag("i", symbols(step.symbol))]
     if step.formula:
-        parts.append(f" = {_symbols(step.formula)}")
+        parts += [" = ", formula(step)]
         if step.operands:
-            parts.append(f" = {_numbers(step, units)}")
+            parts.append(f" = {numbers(step, units)}")
     parts.append(f" = {_value(step.value, step.quantity, units)}")
     if step.note:
-        parts.append(f"; {step.note}")
+        parts += ["; ", symbols(step.note)]
     if step.clause:
         parts.append(tag("small", f"  {step.clause}"))
     return join(*parts)
 
 
-def _symbols(formula: str) -> str:
-    return _filled(formula, lambda name: name.replace("gamma", "γ"))
-
-
-def _numbers(step: Step, units: DisplayUnits) -> str:
-    values = {name: _value(value, quantity, units) for name, value, quantity in step.operands}
-    return _filled(step.formula, lambda name: values.get(name, name))
-
-
-def _filled(formula: str, word: Callable[[str], str]) -> str:
-    return re.sub(r"\{([^}]*)\}", lambda match: word(match[1]), formula)
-
-
 def _value(value: float, quantity: str, units: DisplayUnits) -> str:
-    return units.text(value, quantity) if quantity else f"{value:.3f}"
+    if not math.isfinite(value):
+        return "none suffices"
+    return value_text(value, quantity, units)

@@ -2,11 +2,16 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Mapping, Sequence
+
 from analysis_core.findings import Finding
 from analysis_core.results import LineResult, Outcome
 from analysis_core.sheet.html import Content, Markup, join, tag
 from analysis_core.sheet.table import facts, table
 from analysis_core.units import DisplayUnits
+
+Use = tuple[float, str]
 
 CAUTIONS = (
     "This calculation follows from the model as it was idealised; the decisions of the "
@@ -44,7 +49,8 @@ def cover(outcome: Outcome, units: DisplayUnits, *, title: str, date: str) -> Ma
 
 def contents(outcome: Outcome) -> Markup:
     """Return the table of contents."""
-    fixed = [("summary", "Summary"), ("basis", "Basis"), ("findings", "Findings")]
+    fixed = [("summary", "Summary"), ("basis", "Basis"), ("assumptions", "Assumptions"),
+             ("findings", "Findings")]  # fmt: skip
     lines = [(anchor(r), f"{r.line.mark}  {_what(r)}") for r in outcome.lines]
     return tag(
         "nav",
@@ -59,19 +65,45 @@ def anchor(result: LineResult) -> str:
     return "line-" + "".join(c if c.isascii() and c.isalnum() else "-" for c in result.line.mark)
 
 
-def summary(outcome: Outcome, units: DisplayUnits) -> Markup:
-    """Return the governing figures of every line."""
-    head = ("Line", "Storey", "Sagging", "Hogging", "Shear", "Deflection", "Largest reaction")
+def summary(outcome: Outcome, units: DisplayUnits, uses: Mapping[str, Use]) -> Markup:
+    """Return the governing figures of every line; ``uses``: largest use and its check by mark."""
+    head = ("Line", "Storey", "Sagging", "Hogging", "Shear", "Deflection", "Reaction", "Use",
+            "Check that uses most")  # fmt: skip
     moment = units.symbol("moment")
     below = ("", "", moment, moment, units.symbol("force"), units.symbol("deflection"),
-             units.symbol("force"))  # fmt: skip
-    rows = [_summary_row(result, units) for result in outcome.lines]
+             units.symbol("force"), "", "")  # fmt: skip
+    rows = [(*_summary_row(r, units), *_use(uses.get(r.line.mark))) for r in outcome.lines]
     return tag(
         "section",
         tag("h2", "Summary"),
-        table(head, below, rows, caption="Governing effects of each line", texts=(0, 1)),
+        table(head, below, rows, caption="Governing effects of each line", texts=(0, 1, 8)),
         id="summary",
     )
+
+
+def assumptions(
+    decisions: Sequence[Sequence[str]],
+    materials: Sequence[Sequence[str]],
+    sections: Sequence[Sequence[str]],
+    units: DisplayUnits,
+) -> Markup:
+    """Return what was settled for the whole model and by whom, and what members are made of."""
+    stress, area = units.symbol("stress"), units.symbol("area")
+    inertia, length = units.symbol("inertia"), units.symbol("section length")
+    return tag(
+        "section",
+        tag("h2", "Assumptions"),
+        table(("Subject", "Taken as", "Settled by"), ("",) * 3, decisions,
+              caption="Decisions that hold for all lines; those for single supports and members "
+              "stand with each line and under Findings", texts=(0, 1, 2)),
+        table(("Material", "Kind", "E", "Density", "Strengths", "From"),
+              ("", "", stress, "kg/m³", stress, ""), materials, caption="Materials",
+              texts=(0, 1, 4, 5)),
+        table(("Section", "Shape", "Depth", "Width", "A", "I", "I across", "From"),
+              ("", "", length, length, area, inertia, inertia, ""), sections,
+              caption="Sections", texts=(0, 1, 7)),
+        id="assumptions",
+    )  # fmt: skip
 
 
 def basis(outcome: Outcome) -> Markup:
@@ -112,6 +144,14 @@ def findings(found: tuple[Finding, ...], names: dict[str, str]) -> Markup:
     ]
     body = tag("ul", items, class_="findings") if items else tag("p", "None.")
     return tag("section", tag("h2", "Findings"), body, id="findings")
+
+
+def _use(use: Use | None) -> tuple[Markup | str, str]:
+    if use is None:
+        return "–", "nothing could be checked"
+    value, name = use
+    shown = f"{value:.2f}" if math.isfinite(value) else "∞"
+    return tag("span", shown, class_="pass" if value <= 1.0 else "fail"), name
 
 
 def _signature() -> Markup:

@@ -8,6 +8,8 @@ from analysis_core.record_rows import RecordTable
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.table import table
 
+_FITS = 34
+"""Rows of a table that fits on one page."""
 _QUIET = ("stiffness", "factor", "carry")
 
 
@@ -44,4 +46,4 @@ def distribution(shown: RecordTable, closing: str, unit: str) -> Markup:
     notes = [*shown.notes, *([closing] if closing else [])]
     if notes:
         parts.append(tag("ul", [tag("li", note) for note in notes], class_="table-notes"))
-    return tag("div", parts, class_="block")
+    return tag("div", parts, class_="keep" if len(shown.rows) <= _FITS else None)

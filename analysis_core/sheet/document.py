@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from importlib import resources
 
 from analysis_core.results import LineResult, Outcome
-from analysis_core.sheet.cover import basis, contents, cover, findings, summary
+from analysis_core.sheet.cover import Use, basis, contents, cover, findings, summary
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.line_section import line_section
 from analysis_core.units import DisplayUnits
@@ -22,11 +22,14 @@ def sheet(
     date: str = "",
     working: Extra | None = None,
     checks: Extra | None = None,
+    uses: Mapping[str, Use] | None = None,
+    assumed: Markup | None = None,
 ) -> str:
     """Return the sheet as HTML text.
 
     ``date`` is shown as given.  ``working`` gives what stands between a line's actions and its
-    effects (the distribution), ``checks`` what stands behind them.
+    effects (the distribution), ``checks`` what stands behind them.  ``uses``: the largest use of a
+    line and its check, by mark.  ``assumed``: the section of assumptions.
     """
     names = dict(outcome.model.names)
     working = working or _nothing
@@ -37,8 +40,9 @@ def sheet(
         contents(outcome),
         tag(
             "main",
-            summary(outcome, units),
+            summary(outcome, units, uses or {}),
             basis(outcome),
+            assumed or tag("section", tag("h2", "Assumptions"), id="assumptions"),
             findings(outcome.findings, names),
             [
                 line_section(result, names, units, working(result), checks(result))

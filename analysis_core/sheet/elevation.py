@@ -13,17 +13,24 @@ from analysis_core.model import (
     PointMoment,
     Support,
 )
+from analysis_core.sheet.frame import frame_elevation
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.strip import WIDTH, Strip
 from analysis_core.units import DisplayUnits
 
 _AXIS = 44.0
 _HEIGHT = 104.0
+_LETTER = 5.6  # pixels of a letter
 _LOAD = 34.0  # pixels of the largest intensity
 
 
 def elevation(line: Line, at: Strip, units: DisplayUnits) -> Markup:
-    """Return the members with their lengths, sections and bearings, as a drawing."""
+    """Return the members with their lengths, sections and bearings, as a drawing.
+
+    Frames are drawn as they stand, lines as a strip.
+    """
+    if line.kind == "frame" or any(m.role != "span" for m in line.members):
+        return frame_elevation(line, units)
     parts: list[Markup] = []
     drawn: set[int] = set()
     for index, member in enumerate(at.members):
@@ -32,7 +39,7 @@ def elevation(line: Line, at: Strip, units: DisplayUnits) -> Markup:
         parts += _texts(member, (x1 + x2) / 2.0, x2 - x1, units)
         parts += _releases(member, x1, x2)
         for joint, x in ((line.joints[member.start], x1), (line.joints[member.end], x2)):
-            if joint.id not in drawn or line.kind == "frame":
+            if joint.id not in drawn:
                 parts += _bearing(joint, x)
                 drawn.add(joint.id)
     return _figure("Elevation", parts, _HEIGHT)
@@ -77,8 +84,11 @@ def _texts(member: Member, x: float, room: float, units: DisplayUnits) -> list[M
     name = f"{member.span}" if member.role == "span" and member.span else f"leg {member.id}"
     length = units.text(member.length, "length")
     section = member.section.name if member.section else ""
-    out = [tag("text", f"{name}:  {length}", x=x, y=_AXIS - 9.0, class_="span-name")]
-    if section and room > 6.0 * len(section):
+    text = f"{name}:  {length}"
+    if room < _LETTER * len(text):
+        text = name
+    out = [tag("text", text, x=x, y=_AXIS - 9.0, class_="span-name")]
+    if section and room > _LETTER * len(section) + 24.0:
         out.append(tag("text", section, x=x, y=_AXIS + 15.0, class_="section-name"))
     return out
 
@@ -150,9 +160,10 @@ def _distributed(
         text += f" to {units.number(ends[1], 'line load')}"
     middle = (points[0][0] + points[-1][0]) / 2.0
     top = min(y for _, y in points)
+    height = (top + base) / 2.0 + 4.0 if base - top > 16.0 else top - 3.0
     return [
         tag("path", d=path, class_="load"),
-        tag("text", f"{text} {units.symbol('line load')}", x=middle, y=top - 3.0, class_="value"),
+        tag("text", f"{text} {units.symbol('line load')}", x=middle, y=height, class_="value"),
     ]
 
 

@@ -45,8 +45,8 @@ def line_section(
         parts += _reactions(result, names, units)
         parts.append(_verification(result))
     else:
-        why = f" {line.fault}" if line.fault else " See the findings."
-        parts.append(tag("p", f"This line was not analysed.{why}", class_="error"))
+        why = f": {line.fault}" if line.fault else "; the findings say why."
+        parts.append(tag("p", f"This line was not analysed{why}", class_="error"))
     return tag("section", parts, id=anchor(result), class_="line")
 
 

@@ -6,6 +6,9 @@ from collections.abc import Sequence
 
 from analysis_core.sheet.html import Content, Markup, tag
 
+_SHORT = 16
+"""Rows of a table that is kept together on one page."""
+
 
 def table(
     head: Sequence[Content],
@@ -25,12 +28,13 @@ def table(
         tag("tr", tag("th", row[0], scope="row"), [tag("td", c) for c in row[1:]]) for row in rows
     ]
     left = " ".join(f"t{column}" for column in texts if column)
+    keep = "keep" if len(rows) <= _SHORT else ""
     return tag(
         "table",
         tag("caption", caption),
         tag("thead", top),
         tag("tbody", body),
-        class_=f"{left} {class_}".strip() or None,
+        class_=" ".join(filter(None, (left, class_, keep))) or None,
     )
 
 

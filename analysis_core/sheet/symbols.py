@@ -1,0 +1,53 @@
+"""Symbols of the standards with their subscripts, and formulas with their numbers."""
+
+from __future__ import annotations
+
+import re
+from functools import lru_cache
+
+from analysis_core.checks.working import Step
+from analysis_core.sheet.html import Markup, tag, text_of
+from analysis_core.units import DisplayUnits
+
+_GREEK = {
+    "alpha": "α", "beta": "β", "gamma": "γ", "lambda": "λ", "chi": "χ", "rho": "ρ", "phi": "φ",
+    "eta": "η", "nu": "ν", "mu": "μ", "Omega": "Ω", "epsilon": "ε",
+}  # fmt: skip
+# A letter or a word, an underscore, and what is set below the line: M_c,Rd, γ_M0, A_sw, c_w.
+_SUBSCRIPT = re.compile(r"([^\W\d_]+'?)_((?:[^\W_]|\+)+(?:,(?!\s)[^\W_]+)*)")
+_OPERAND = re.compile(r"\{([^}]*)\}")
+_SIDE_BY_SIDE = re.compile(r"(?<=[}\)²³]) (?=[{(√])|(?<=}) (?=\d)|(?<=[\dπ²³]) (?=[{√])")
+
+
+@lru_cache(maxsize=4096)
+def symbols(text: str) -> Markup:
+    """Return text in which every ``X_y`` has its y below the line, and Greek letters are Greek."""
+    out, last = [], 0
+    for match in _SUBSCRIPT.finditer(text):
+        out.append(text_of(text[last : match.start()]))
+        out.append(text_of(_GREEK.get(match[1], match[1])))
+        out.append(tag("sub", match[2]).text)
+        last = match.end()
+    out.append(text_of(text[last:]))
+    return Markup("".join(out))
+
+
+def formula(step: Step) -> Markup:
+    """Return a step's formula in symbols."""
+    return symbols(_OPERAND.sub(lambda match: _GREEK.get(match[1], match[1]), step.formula))
+
+
+def numbers(step: Step, units: DisplayUnits) -> str:
+    """Return a step's formula with numbers in the place of its operands."""
+    values = {name: value_text(value, quantity, units) for name, value, quantity in step.operands}
+    multiplied = _SIDE_BY_SIDE.sub(" · ", step.formula)
+    return _OPERAND.sub(lambda match: values.get(match[1], match[1]), multiplied)
+
+
+def value_text(value: float, quantity: str, units: DisplayUnits) -> str:
+    """Return a value in display units; a pure number with as many digits as a check needs."""
+    if quantity:
+        return units.text(value, quantity)
+    if abs(value - round(value)) < 1e-9 and abs(value) < 1000:
+        return f"{value:.0f}".replace("-0", "0")
+    return f"{value:.3f}" if abs(value) >= 0.01 else f"{value:.5f}"
