@@ -179,6 +179,9 @@ class JobLoader(yaml.SafeLoader):
 
 
 def _settings(data: Mapping[str, Any], text: str) -> Settings:
+    _named_once(data.get("cases", ()), "cases")
+    _named_once(data.get("combinations", ()), "combinations")
+
     def each(key: str, build: Any) -> tuple[Any, ...]:
         return tuple(build(item, f"{key}[{i}]") for i, item in enumerate(data.get(key, ())))
 
@@ -431,6 +434,19 @@ def _checks(data: Mapping[str, Any]) -> CheckSettings:
         ),
         durations=data.get("durations", {}),
     )
+
+
+def _named_once(items: Iterable[Mapping[str, Any]], key: str) -> None:
+    """Two entries of one name would say different things of one case; the first would win."""
+    seen: dict[str, int] = {}
+    for number, item in enumerate(items):
+        name = item["name"].casefold()
+        if name in seen:
+            raise JobError(
+                f"'{key}[{number}]' has the name '{item['name']}', which '{key}[{seen[name]}]' "
+                f"has already; join the two."
+            )
+        seen[name] = number
 
 
 def _end(data: Mapping[str, Any], where: str) -> Any:

@@ -99,6 +99,7 @@ def test_an_empty_job_file_is_the_defaults():
         ("actions: [{case: G, on: {}, linear: [1 kN/m]}]", "at least 2"),
         ("cases: [{name: G, nature: dead}]", "must be one of permanent"),
         ("cases: {name: G}", "must be a list"),
+        ("cases: [{name: Q}, {name: q}]", r"'cases\[1\]' has the name 'q'.*join the two"),
         ("cases: [{name: 12}]", "must be text"),
         ("supports: [{on: {}, condition: fixed, vertical: rigid}]", "either a 'condition'"),
         ("supports: [{on: {}, vertical: stiff}]", "or the word rigid or free"),
