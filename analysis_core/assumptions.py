@@ -12,8 +12,10 @@ from analysis_core.units import DisplayUnits
 _JOB, _DEFAULT = "job file", "default of the program"
 
 
-def assumptions_part(outcome: Outcome, settings: Settings, units: DisplayUnits) -> Markup:
-    """Return the section of assumptions of the sheet."""
+def assumptions_part(
+    outcome: Outcome, settings: Settings, units: DisplayUnits, note: str = ""
+) -> Markup:
+    """Return the section of assumptions of the sheet, with a note at its end."""
     members = [m for r in outcome.lines for m in r.line.members]
     materials = dict.fromkeys(m.material for m in members if m.material is not None)
     sections = dict.fromkeys(m.section for m in members if m.section is not None)
@@ -22,6 +24,7 @@ def assumptions_part(outcome: Outcome, settings: Settings, units: DisplayUnits) 
         [_material(material, units) for material in materials],
         [_section(section, units) for section in sections],
         units,
+        note,
     )
 
 

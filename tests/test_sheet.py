@@ -17,6 +17,13 @@ MODEL = SAMPLES / "quarry_lane_physical_ifc4.ifc"
 JOB = load(SAMPLES / "quarry_lane.yaml")
 EMPTY = {"meta", "br", "line", "path", "rect", "circle", "polyline"}
 
+# End tags that HTML allows to leave out, and what ends them (living standard, 13.1.2.4).
+OPTIONAL = {"td", "th", "tr", "li", "thead", "tbody"}
+CELLS = {"td", "th"}
+ENDED_BY = {
+    "td": CELLS, "th": CELLS, "tr": CELLS | {"tr"}, "tbody": CELLS | {"tr", "thead"}, "li": {"li"},
+}  # fmt: skip
+
 
 class Reader(HTMLParser):
     """Tags in order, and tables as rows of (class of the row, texts of its cells)."""
@@ -31,6 +38,8 @@ class Reader(HTMLParser):
         attrs = dict(attrs)
         self.tags.append(tag)
         self.attributes.append((tag, attrs))
+        while self.open and self.open[-1] in ENDED_BY.get(tag, ()):
+            self.open.pop()
         if tag not in EMPTY:
             self.open.append(tag)
         if tag == "table":
@@ -45,6 +54,8 @@ class Reader(HTMLParser):
         self.attributes.append((tag, dict(attrs)))
 
     def handle_endtag(self, tag):
+        while self.open[-1] != tag and self.open[-1] in OPTIONAL:
+            self.open.pop()
         assert self.open.pop() == tag
 
     def handle_data(self, data):
@@ -76,7 +87,7 @@ def test_every_line_has_its_drawings_tables_and_verification(outcome, text, read
     solved = len(outcome.lines)
     assert text.count("Verification: largest unbalance") == solved
     assert sum("Bearings" in c for c in read.captions) == solved
-    assert text.count('class="diagram"') == 3 * solved
+    assert text.count("class=diagram") == 3 * solved
     assert "licensed engineer" in text.lower()
 
 
@@ -190,9 +201,40 @@ def test_symbols_have_their_subscripts_and_numbers_stand_between_signs():
     )  # fmt: skip
     assert symbols("M_c,Rd").text == "M<sub>c,Rd</sub>"
     assert symbols("χ_LT, λ_LT").text == "χ<sub>LT</sub>, λ<sub>LT</sub>"
+    assert symbols("λ_LT²").text == "λ<sub>LT</sub>²"
     assert symbols("<b>_x").text == "&lt;b&gt;_x"
     assert formula(step).text == "W<sub>pl</sub> f<sub>y</sub> / γ<sub>M0</sub>"
     assert numbers(step, metric) == "628.4 cm³ · 355.0 MPa / 1"
+    squared = Step(
+        "x", "π² {E} {L}² / 2", 1.0, "", "", (("E", 1e6, "stress"), ("L", 3.0, "length"))
+    )
+    assert numbers(squared, metric) == "π² · 1.0 MPa · (3.000 m)² / 2"
+
+
+def test_equal_lines_refer_to_the_first_of_them(outcome, text):
+    """The joists FF-04 to FF-07 are equal in all that their distribution depends on."""
+    section = text[text.index("id=line-FF-05") : text.index("id=line-FF-06")]
+    first = text[text.index("id=line-FF-04") : text.index("id=line-FF-05")]
+    assert "As for line <a href=#line-FF-04" in section.replace('"', "")
+    assert "class=distribution" in first
+    assert "class=distribution" not in section
+    assert "class=distribution" in text[text.index("id=line-FF-02") : text.index("id=line-FF-03")]
+
+
+def test_the_points_left_out_of_a_diagram_lie_on_its_lines():
+    from analysis_core.sheet.diagrams import thinned
+
+    bent = [(0.0, 0.0), (1.0, 1.0), (2.0, 2.0), (3.0, 2.0), (4.0, 2.0), (5.0, 9.0)]
+    assert thinned(bent) == [(0.0, 0.0), (2.0, 2.0), (4.0, 2.0), (5.0, 9.0)]
+    curve = [(float(x), x * x / 10.0) for x in range(21)]
+    kept = dict(thinned(curve))
+    for x, y in curve:
+        low = max(k for k in kept if k <= x)
+        high = min(k for k in kept if k >= x)
+        line = kept[low] if low == high else (
+            kept[low] + (kept[high] - kept[low]) * (x - low) / (high - low)
+        )  # fmt: skip
+        assert line == pytest.approx(y, abs=0.31)
 
 
 def test_the_summary_names_the_largest_use_of_each_line(outcome, read):
@@ -222,8 +264,8 @@ def test_a_frame_is_drawn_to_scale_as_it_stands():
 
     drawing = text[text.index("Elevation, to scale") :]
     drawing = drawing[: drawing.index("</svg>")]
-    lines = re.findall(r'<line x1="([\d.]+)" y1="([\d.]+)" x2="([\d.]+)" y2="([\d.]+)" '
-                       r'class="member"/>', drawing)  # fmt: skip
+    lines = re.findall(r"<line x1=([\d.]+) y1=([\d.]+) x2=([\d.]+) y2=([\d.]+) "
+                       r"class=member />", drawing)  # fmt: skip
     line = frame.lines[0].line
     assert len(lines) == len(line.members)
     scales = []
@@ -231,8 +273,8 @@ def test_a_frame_is_drawn_to_scale_as_it_stands():
         x1, y1, x2, y2 = map(float, drawn)
         a, b = line.joints[member.start], line.joints[member.end]
         scales.append(((x2 - x1) ** 2 + (y2 - y1) ** 2) ** 0.5 / member.length)
-        assert (y1 - y2) == pytest.approx(scales[-1] * (b.z - a.z), abs=0.1)
-    assert max(scales) == pytest.approx(min(scales), rel=1e-3)
+        assert (y1 - y2) == pytest.approx(scales[-1] * (b.z - a.z), abs=0.15)
+    assert max(scales) == pytest.approx(min(scales), rel=2e-3)
 
 
 def test_a_line_that_failed_says_why_and_the_others_are_there():

@@ -27,14 +27,12 @@ def check_lateral(design: MemberDesign, f: Figures, fy: float, class_: int) -> C
     if design.section.shape in ("tube", "hollow rectangle"):
         words = "hollow sections are not susceptible"
         return _not_susceptible(design, f, fy, class_, words)
-    found: Check | None = None
-    for field in design.fields:
-        for segment in segments(design, field):
-            check = buckling(design, f, fy, class_, segment)
-            if found is None or check.use > found.use:
-                found = check
-    words = "the compressed flange is held all along"
-    return found or _not_susceptible(design, f, fy, class_, words)
+    found = [s for field in design.fields for s in segments(design, field)]
+    if not found:
+        words = "the compressed flange is held all along"
+        return _not_susceptible(design, f, fy, class_, words)
+    worst = max(found, key=lambda s: abs(s.largest) / _reduction(design, f, fy, class_, s, None))
+    return buckling(design, f, fy, class_, worst)
 
 
 def buckling(
@@ -66,7 +64,7 @@ def reduction_between(
     if design.section.shape in ("tube", "hollow rectangle"):
         return 1.0
     found = [
-        _reduction(design, f, fy, class_, segment, Working())
+        _reduction(design, f, fy, class_, segment, None)
         for field in design.fields
         if field.source == source
         for segment in segments(design, field)
@@ -75,42 +73,51 @@ def reduction_between(
 
 
 def _reduction(
-    design: MemberDesign, f: Figures, fy: float, class_: int, segment: UnbracedSegment, w: Working
+    design: MemberDesign,
+    f: Figures,
+    fy: float,
+    class_: int,
+    segment: UnbracedSegment,
+    w: Working | None,
 ) -> float:
-    section, d = design.section, plates(design.section)
+    """χ_LT of a segment, written down where there is a working to write it in."""
+    section, iw = design.section, plates(design.section).get("warping", 0.0)
     e, g = design.material.elastic_modulus, design.material.shear_modulus
     g = g or e / 2.6
+    c1, length = moment_gradient(segment), segment.length
+    critical = critical_moment(
+        c1, length, e=e, g=g, iz=section.inertia_lateral, it=section.torsion, iw=iw
+    )
+    plastic, elastic = moduli(design)
+    modulus = plastic if class_ <= 2 else elastic
+    slender = math.sqrt(modulus * fy / critical)
+    curve, why = buckling_curve(design)
+    rolled = section.shape == "I"
+    plateau, beta = (f["lambda_LT0"], f["beta"]) if rolled else (0.2, 1.0)
+    chi = reduction_factor(slender, IMPERFECTION[curve], plateau=plateau, beta=beta)
+    if w is None:
+        return chi
     words = "a free end: none taken" if segment.free else "from the moments at the quarter points"
-    c1 = w.step("C_1", "12.5 M_max / (2.5 M_max + 3 M_2 + 4 M_3 + 3 M_4)",
-                moment_gradient(segment), "", "common practice", note=words)  # fmt: skip
-    iw, length = d.get("warping", 0.0), segment.length
-    critical = w.step(
+    w.step("C_1", "12.5 M_max / (2.5 M_max + 3 M_2 + 4 M_3 + 3 M_4)", c1, "", "common practice",
+           note=words)  # fmt: skip
+    w.step(
         "M_cr", "{C_1} π² {E} {I_z} / {L}² √({I_w}/{I_z} + {L}² {G} {I_t} / (π² {E} {I_z}))",
-        critical_moment(c1, length, e=e, g=g, iz=section.inertia_lateral, it=section.torsion,
-                        iw=iw),
-        "moment", "literature; load at the shear centre",
+        critical, "moment", "literature; load at the shear centre",
         C_1=(c1, ""), E=(e, "stress"), I_z=(section.inertia_lateral, "inertia"),
         L=(length, "length"), I_w=(iw, "warping"), G=(g, "stress"),
         I_t=(section.torsion, "inertia"),
     )  # fmt: skip
-    plastic, elastic = moduli(design)
-    modulus = plastic if class_ <= 2 else elastic
-    slender = w.step(
-        "λ_LT", "√({W_y} {f_y} / {M_cr})", math.sqrt(modulus * fy / critical), "", "6.3.2.2(1)",
+    w.step(
+        "λ_LT", "√({W_y} {f_y} / {M_cr})", slender, "", "6.3.2.2(1)",
         W_y=(modulus, "section modulus"), f_y=(fy, "stress"), M_cr=(critical, "moment"),
     )  # fmt: skip
-    curve, words = buckling_curve(design)
-    alpha = w.step("α_LT", "", IMPERFECTION[curve], "", "Tables 6.3, 6.5", note=words)
-    if section.shape == "I":
+    w.step("α_LT", "", IMPERFECTION[curve], "", "Tables 6.3, 6.5", note=why)
+    if rolled:
         return w.step(
-            "χ_LT", "1 / (Φ_LT + √(Φ_LT² - β λ_LT²)) ≤ 1, ≤ 1/λ_LT²",
-            reduction_factor(slender, alpha, plateau=f["lambda_LT0"], beta=f["beta"]), "",
-            "6.3.2.3(1), (6.57)", note=f"plateau {f['lambda_LT0']:g}, β = {f['beta']:g}",
+            "χ_LT", "1 / (Φ_LT + √(Φ_LT² - β λ_LT²)) ≤ 1, ≤ 1/λ_LT²", chi, "",
+            "6.3.2.3(1), (6.57)", note=f"plateau {plateau:g}, β = {beta:g}",
         )  # fmt: skip
-    return w.step(
-        "χ_LT", "1 / (Φ_LT + √(Φ_LT² - λ_LT²)) ≤ 1",
-        reduction_factor(slender, alpha, plateau=0.2, beta=1.0), "", "6.3.2.2(1), (6.56)",
-    )  # fmt: skip
+    return w.step("χ_LT", "1 / (Φ_LT + √(Φ_LT² - λ_LT²)) ≤ 1", chi, "", "6.3.2.2(1), (6.56)")
 
 
 def buckling_curve(design: MemberDesign) -> tuple[str, str]:

@@ -277,9 +277,8 @@ def check_shear(design: MemberDesign, f: Figures, fy: float) -> Check:
 
 def check_bending_and_shear(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
     """6.2.8: where the shear exceeds half its resistance, the moment resistance is reduced."""
-    base = Working()
-    moment_resistance = moment_resistance_of(design, f, fy, class_, base)
-    shear_resistance = shear_resistance_of(design, f, fy, base)
+    moment_resistance = moment_resistance_of(design, f, fy, class_, Working())
+    shear_resistance = shear_resistance_of(design, f, fy, Working())
     worst: tuple[float, float, float, float, float, str] | None = None
     for field in design.fields:
         shares = np.abs(field.shear) / shear_resistance
@@ -298,9 +297,9 @@ def check_bending_and_shear(design: MemberDesign, f: Figures, fy: float, class_:
     if worst is None:
         return not_checked("bending with shear", "No strength combination was found.", "6.2.8")
     _, moment, resistance, x, acting, source = worst
-    w = Working(list(base.steps))
+    w = Working()
     share = w.step(
-        "V_Ed / V_pl,Rd", "{V_Ed} / {V_pl}", acting / shear_resistance, "", "6.2.8(2)",
+        "v", "{V_Ed} / {V_pl}", acting / shear_resistance, "", "6.2.8(2)",
         V_Ed=(acting, "force"), V_pl=(shear_resistance, "force"),
     )  # fmt: skip
     if share > 0.5:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Sequence
 
 from analysis_core.checks.working import Check, Step
@@ -12,10 +13,7 @@ from analysis_core.sheet.table import table
 from analysis_core.units import DisplayUnits
 
 _UNCONFIRMED = "†"
-NOTE = (
-    f"{_UNCONFIRMED} Clause and figure were written from memory of the standard and have not been "
-    f"compared with it; the licensed engineer must do so."
-)
+NOTE = f"{_UNCONFIRMED} Not compared with the standard: see Cautions."
 
 
 def line_checks(
@@ -25,8 +23,13 @@ def line_checks(
 
     ``members``: name, code, how it is held sideways, and its checks.
     """
-    rows = [(name, *_row(check, units)) for name, _, _, checks in members for check in checks]
-    codes = ", ".join(dict.fromkeys(code.upper() for _, code, _, _ in members if code))
+    several = len({code for _, code, _, _ in members}) > 1
+    rows = [
+        (name, *_row(check, units, "" if several else _named(code)))
+        for name, code, _, checks in members
+        for check in checks
+    ]
+    codes = ", ".join(dict.fromkeys(_named(code) for _, code, _, _ in members if code))
     parts = [
         table(
             ("Member", "Check", "Demand", "Resistance", "Use", "At", "Result", "Clause"),
@@ -41,21 +44,28 @@ def line_checks(
         held.setdefault(restraints, []).append(name)
     sentences = [f"{', '.join(names)}: {restraints}." for restraints, names in held.items()]
     parts.append(tag("p", "Held sideways. ", " ".join(sentences), class_="verification"))
-    parts += [
-        _working(name, check, units)
-        for name, _, _, checks in members
-        for check in checks
-        if check.steps
-    ]
+    said = ""
+    for name, _, _, checks in members:
+        for check in checks:
+            if check.steps:
+                parts.append(_working(name, check, units, said=said))
+                said = check.not_covered
     return parts
 
 
-def _row(check: Check, units: DisplayUnits) -> tuple[Markup | str, ...]:
+def _named(code: str) -> str:
+    """The name of a code as its clauses have it: "EN 1993-1-1"."""
+    return code.upper().replace("-", " ", 1)
+
+
+def _row(check: Check, units: DisplayUnits, code: str) -> tuple[Markup | str, ...]:
+    """``code`` stands in the caption and is left out of the clause."""
+    clause = re.sub(rf"^{re.escape(code)}[^,]*, ", "", check.clause) if code else check.clause
     if check.status == "not checked":
         return (check.name, "", "", "", "", tag("strong", f"not checked: {check.reason}"),
-                check.clause)  # fmt: skip
+                clause)  # fmt: skip
     good = check.status == "satisfied"
-    result = tag("span", check.status, class_="pass" if good else "fail")
+    result = check.status if good else tag("strong", check.status, class_="fail")
     return (
         check.name,
         _value(abs(check.demand), check.quantity, units),
@@ -63,14 +73,16 @@ def _row(check: Check, units: DisplayUnits) -> tuple[Markup | str, ...]:
         f"{check.use:.3f}" if math.isfinite(check.use) else "∞",
         units.number(check.x, "length") if check.source else "–",
         result,
-        f"{check.clause}\xa0{_UNCONFIRMED}",
+        f"{clause}\xa0{_UNCONFIRMED}",
     )
 
 
-def _working(name: str, check: Check, units: DisplayUnits) -> Markup:
+def _working(name: str, check: Check, units: DisplayUnits, *, said: str) -> Markup:
+    """``said``: what the check before does not cover, which need not be repeated."""
     items = [tag("li", _step(step, units)) for step in check.steps]
     governed = f", {check.source}" if check.source else ""
-    closing = tag("p", check.not_covered, class_="aside") if check.not_covered else ""
+    left = "Not covered: as before." if check.not_covered == said else check.not_covered
+    closing = tag("p", left, class_="aside") if check.not_covered else ""
     return tag(
         "div",
         tag("p", f"{check.name[0].upper()}{check.name[1:]}, {name}{governed}", class_="working"),

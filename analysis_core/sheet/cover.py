@@ -7,6 +7,7 @@ from collections.abc import Mapping, Sequence
 
 from analysis_core.findings import Finding
 from analysis_core.results import LineResult, Outcome
+from analysis_core.sheet.anchors import anchor
 from analysis_core.sheet.html import Content, Markup, join, tag
 from analysis_core.sheet.table import facts, table
 from analysis_core.units import DisplayUnits
@@ -18,6 +19,8 @@ CAUTIONS = (
     "idealisation are listed with each line and must be agreed first.",
     "Effects are linear and of first order. Members are rigid axially and, unless stated, in "
     "shear. Stability of the structure as a whole, fire, fatigue and connections are not covered.",
+    "Checks marked † rest on clauses and figures that were written from memory of the standards "
+    "and have not been compared with them; the licensed engineer must do so.",
     "Local codes govern. A licensed engineer must check this calculation and answer for it before "
     "anything is built from it.",
 )
@@ -60,11 +63,6 @@ def contents(outcome: Outcome) -> Markup:
     )
 
 
-def anchor(result: LineResult) -> str:
-    """Return the id of a line's section: letters and digits of its mark only."""
-    return "line-" + "".join(c if c.isascii() and c.isalnum() else "-" for c in result.line.mark)
-
-
 def summary(outcome: Outcome, units: DisplayUnits, uses: Mapping[str, Use]) -> Markup:
     """Return the governing figures of every line; ``uses``: largest use and its check by mark."""
     head = ("Line", "Storey", "Sagging", "Hogging", "Shear", "Deflection", "Reaction", "Use",
@@ -86,6 +84,7 @@ def assumptions(
     materials: Sequence[Sequence[str]],
     sections: Sequence[Sequence[str]],
     units: DisplayUnits,
+    note: str = "",
 ) -> Markup:
     """Return what was settled for the whole model and by whom, and what members are made of."""
     stress, area = units.symbol("stress"), units.symbol("area")
@@ -102,6 +101,7 @@ def assumptions(
         table(("Section", "Shape", "Depth", "Width", "A", "I", "I across", "From"),
               ("", "", length, length, area, inertia, inertia, ""), sections,
               caption="Sections", texts=(0, 1, 7)),
+        tag("p", note) if note else "",
         id="assumptions",
     )  # fmt: skip
 

@@ -16,6 +16,7 @@ from analysis_core.units import DisplayUnits
 
 _HALF = 58.0  # pixels of the largest ordinate
 _LABEL = 15.0
+_STRAIGHT = 0.3  # pixels that a point may lie beside the line that stands for it
 _MANY = 3  # members; of more, every second station is close enough at this size
 
 
@@ -57,10 +58,15 @@ def diagram(kind: _Kind, envelope: LineEnvelope, at: Strip, units: DisplayUnits)
     parts = [_bound(kind.lower, "lower", members, at, axis, scale)]
     parts.append(_bound(kind.upper, "upper", members, at, axis, scale))
     ends = zip(at.starts, at.ends, strict=True)
-    base = " ".join(f"M{_px(a)},{_px(axis)}H{_px(b)}" for a, b in ends)
+    base = "".join(f"M{_px(a)},{_px(axis)}H{_px(b)}" for a, b in ends)
     parts.append(tag("path", d=base, class_="axis"))
+    peaks, texts = "", []
     for index, member in enumerate(members):
-        parts += _labels(kind, member, index, at, axis, scale, largest, units)
+        for x, y, text in _labels(kind, member, index, at, axis, scale, largest, units):
+            peaks += f"M{_px(x)},{_px(y)}h0"
+            texts.append(text)
+    if peaks:
+        parts += [tag("path", d=peaks, class_="peaks"), tag("g", texts, class_="value")]
     unit = units.symbol(kind.quantity)
     title = f"{kind.name} [{unit}]"
     return tag(
@@ -85,39 +91,60 @@ def _bound(
     pieces = []
     step = 2 if len(members) > _MANY and len(members[0].x) % 2 else 1
     for index, member in enumerate(members):
+        start = at.starts[index]
         points = [
-            f"{_px(at.at(index, float(x)))},{_px(axis + scale * v)}"
+            (round(at.at(index, float(x)), 1), round(axis + scale * v, 1))
             for x, v in zip(member.x[::step], values(member)[::step], strict=True)
         ]
-        pieces.append(f"M{_px(at.starts[index])},{_px(axis)}L{' '.join(points)}V{_px(axis)}Z")
+        path, (x0, y0) = f"M{_px(start)},{_px(axis)}", (round(start, 1), round(axis, 1))
+        for x, y in thinned(points):
+            across, down = _px(x - x0), _px(y - y0)
+            path += f"l{across}{'' if down.startswith('-') else ','}{down}"
+            x0, y0 = x, y
+        pieces.append(f"{path}V{_px(axis)}Z")
     return tag("path", d="".join(pieces), class_=f"area {name}")
 
 
+def thinned(points: Sequence[tuple[float, float]]) -> list[tuple[float, float]]:
+    """Return points without those that lie on the straight line between kept ones."""
+    kept, last = [points[0]], 0
+    for i in range(2, len(points)):
+        (x1, y1), (x2, y2) = points[last], points[i]
+        run = max(x2 - x1, 1e-9)
+        straight = all(
+            abs(y1 + (y2 - y1) * (x - x1) / run - y) <= _STRAIGHT for x, y in points[last + 1 : i]
+        )
+        if not straight:
+            last = i - 1
+            kept.append(points[last])
+    return [*kept, points[-1]]
+
+
 def _px(value: float) -> str:
-    return f"{value:.1f}".removesuffix(".0")
+    text = f"{value:.1f}".removesuffix(".0")
+    return "0" if text == "-0" else text
 
 
 def _labels(
     kind: _Kind, member: MemberEnvelope, index: int, at: Strip, axis: float, scale: float,
     largest: float, units: DisplayUnits,
-) -> list[Markup]:  # fmt: skip
+) -> list[tuple[float, float, Markup]]:  # fmt: skip
+    """Place of each extreme and its label."""
     out = []
     for extreme in kind.extremes(member):
         if abs(extreme.value) <= 0.02 * largest:
             continue
         x, y = at.at(index, extreme.x), axis + scale * extreme.value
         below = scale * extreme.value > 0.0
-        inside = min(max(x, MARGIN), WIDTH - MARGIN)
-        anchor = "middle"
+        anchor = None
         if extreme.x < 0.02 * float(member.x[-1]):
             anchor = "start"
         elif extreme.x > 0.98 * float(member.x[-1]):
             anchor = "end"
-        out.append(tag("circle", cx=x, cy=y, r=2.0, class_="peak"))
-        out.append(
-            tag(
-                "text", units.number(extreme.value, kind.quantity), x=inside,
-                y=y + (12.0 if below else -5.0), text_anchor=anchor, class_="value",
-            )
+        text = tag(
+            "text", units.number(extreme.value, kind.quantity),
+            x=min(max(x, MARGIN), WIDTH - MARGIN), y=y + (13.0 if below else -5.0),
+            text_anchor=anchor,
         )  # fmt: skip
+        out.append((x, y, text))
     return out

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from analysis_core.record_rows import RecordTable
 from analysis_core.sheet.html import Markup, tag
-from analysis_core.sheet.table import table
+from analysis_core.sheet.table import table, table_row
 
 _FITS = 34
 """Rows of a table that fits on one page."""
@@ -31,15 +31,14 @@ def distribution(shown: RecordTable, closing: str, unit: str) -> Markup:
     head += [tag("th", name, scope="col") for name in shown.columns]
     body = []
     for row in shown.rows:
-        cells = [tag("td", cell) for cell in row.cells]
         class_ = "quiet" if row.kind in _QUIET else row.kind
-        body.append(tag("tr", tag("th", row.name, scope="row"), cells, class_=class_))
+        body.append(table_row((row.name, *row.cells), class_))
     parts = [
         tag(
             "table",
             tag("caption", f"{shown.title}: end moments [{unit}], clockwise on the member"),
             tag("thead", tag("tr", head)),
-            tag("tbody", body),
+            tag("tbody", Markup("".join(body))),
             class_="distribution",
         )
     ]

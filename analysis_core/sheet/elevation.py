@@ -50,12 +50,9 @@ def actions_drawing(line: Line, case: str, at: Strip, units: DisplayUnits) -> Ma
     acting = [a for a in line.actions if a.case == case]
     largest = max((_intensity(a) for a in acting if isinstance(a, DistributedForce)), default=0.0)
     index_of = {m.id: i for i, m in enumerate(at.members)}
-    parts: list[Markup] = []
-    for index in range(len(at.members)):
-        y = _LOAD + 34.0
-        parts.append(
-            tag("line", x1=at.starts[index], y1=y, x2=at.ends[index], y2=y, class_="member thin")
-        )
+    y = _LOAD + 34.0
+    base = "".join(f"M{a:.1f},{y:g}H{b:.1f}" for a, b in zip(at.starts, at.ends, strict=True))
+    parts: list[Markup] = [tag("path", d=base, class_="member thin")]
     shown = 0
     for action in acting:
         if isinstance(action, DistributedForce) and any(action.transverse):
@@ -87,7 +84,7 @@ def _texts(member: Member, x: float, room: float, units: DisplayUnits) -> list[M
     text = f"{name}:  {length}"
     if room < _LETTER * len(text):
         text = name
-    out = [tag("text", text, x=x, y=_AXIS - 9.0, class_="span-name")]
+    out = [tag("text", text, x=x, y=_AXIS - 9.0)]
     if section and room > _LETTER * len(section) + 24.0:
         out.append(tag("text", section, x=x, y=_AXIS + 15.0, class_="section-name"))
     return out
@@ -109,19 +106,20 @@ def _bearing(joint: Joint, x: float) -> list[Markup]:
     support = joint.support
     if support is None:
         return [tag("circle", cx=x, cy=y, r=1.8, class_="free-joint"), number]
-    base = y + 16.0
     parts = []
     if support.vertical > 0.0:
         parts.append(
-            tag("path", d=f"M{x:.1f},{y + 2:.1f} l-8,14 h16 Z", class_=_filling(support.vertical))
-        )
-        parts.append(tag("line", x1=x - 11, y1=base, x2=x + 11, y2=base, class_="ground"))
+            tag("path", d=f"M{x:.1f},{y + 2:g}l-8,14h16Zm-11,14h22",
+                class_=_filling(support.vertical))
+        )  # fmt: skip
     if support.rotation > 0.0:
         parts.append(
             tag("rect", x=x - 3.0, y=y - 9.0, width=6.0, height=18.0,
                 class_=_filling(support.rotation))
         )  # fmt: skip
-    return [*parts, tag("text", _spring_note(support), x=x, y=y + 30.0, class_="note"), number]
+    if note := _spring_note(support):
+        parts.append(tag("text", note, x=x, y=y + 30.0, class_="note"))
+    return [*parts, number]
 
 
 def _filling(stiffness: float) -> str:
@@ -151,8 +149,8 @@ def _distributed(
     points = [
         (at.at(index, s), base - _LOAD * abs(_value(action, s)) / (largest or 1.0)) for s in places
     ]
-    outline = " ".join(f"L{x:.1f},{y:.1f}" for x, y in points)
-    path = f"M{points[0][0]:.1f},{base:.1f} {outline} L{points[-1][0]:.1f},{base:.1f} Z"
+    outline = "".join(f"L{x:.1f},{y:.1f}" for x, y in points)
+    path = f"M{points[0][0]:.1f},{base:g}{outline}V{base:g}Z"
     ends = [_value(action, action.start), _value(action, action.end)]
     same = abs(ends[0] - ends[1]) <= 1e-9 * max(map(abs, ends))
     text = units.number(ends[0], "line load")

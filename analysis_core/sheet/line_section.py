@@ -7,7 +7,7 @@ from collections.abc import Mapping
 
 from analysis_core.model import Line, Member
 from analysis_core.results import LineEnvelope, LineResult
-from analysis_core.sheet.cover import anchor
+from analysis_core.sheet.anchors import anchor
 from analysis_core.sheet.diagrams import DEFLECTION, MOMENT, SHEAR, diagram
 from analysis_core.sheet.elevation import actions_drawing, elevation
 from analysis_core.sheet.html import Markup, tag

@@ -14,8 +14,10 @@ _GREEK = {
     "eta": "η", "nu": "ν", "mu": "μ", "Omega": "Ω", "epsilon": "ε",
 }  # fmt: skip
 # A letter or a word, an underscore, and what is set below the line: M_c,Rd, γ_M0, A_sw, c_w.
-_SUBSCRIPT = re.compile(r"([^\W\d_]+'?)_((?:[^\W_]|\+)+(?:,(?!\s)[^\W_]+)*)")
+_WORD = r"(?:(?![²³⁴⁵⁶])[^\W_]|\+)+"
+_SUBSCRIPT = re.compile(rf"([^\W\d_]+'?)_({_WORD}(?:,(?!\s){_WORD})*)")
 _OPERAND = re.compile(r"\{([^}]*)\}")
+_POWER = re.compile(r"\{([^}]*)\}([²³⁴])")
 _SIDE_BY_SIDE = re.compile(r"(?<=[}\)²³]) (?=[{(√])|(?<=}) (?=\d)|(?<=[\dπ²³]) (?=[{√])")
 
 
@@ -41,6 +43,7 @@ def numbers(step: Step, units: DisplayUnits) -> str:
     """Return a step's formula with numbers in the place of its operands."""
     values = {name: value_text(value, quantity, units) for name, value, quantity in step.operands}
     multiplied = _SIDE_BY_SIDE.sub(" · ", step.formula)
+    multiplied = _POWER.sub(r"({\1})\2", multiplied)
     return _OPERAND.sub(lambda match: values.get(match[1], match[1]), multiplied)
 
 

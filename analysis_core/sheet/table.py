@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from analysis_core.sheet.html import Content, Markup, tag
+from analysis_core.sheet.html import Content, Markup, tag, text_of
 
 _SHORT = 16
 """Rows of a table that is kept together on one page."""
@@ -24,9 +24,7 @@ def table(
     top = [tag("tr", [tag("th", cell, scope="col") for cell in head])]
     if any(units):
         top.append(tag("tr", [tag("td", cell) for cell in units], class_="units"))
-    body = [
-        tag("tr", tag("th", row[0], scope="row"), [tag("td", c) for c in row[1:]]) for row in rows
-    ]
+    body = Markup("".join([table_row(row) for row in rows]))
     left = " ".join(f"t{column}" for column in texts if column)
     keep = "keep" if len(rows) <= _SHORT else ""
     return tag(
@@ -36,6 +34,13 @@ def table(
         tag("tbody", body),
         class_=" ".join(filter(None, (left, class_, keep))) or None,
     )
+
+
+def table_row(cells: Sequence[Content], class_: str = "") -> str:
+    """Return a row whose first cell is its head: the same as of tags, but quicker."""
+    head = f"<tr class={class_}>" if class_ else "<tr>"
+    rest = "".join([f"<td>{text_of(cell)}" for cell in cells[1:]])
+    return f"{head}<th scope=row>{text_of(cells[0])}{rest}"
 
 
 def facts(pairs: Sequence[tuple[Content, Content]]) -> Markup:
