@@ -9,7 +9,7 @@ from analysis_core.sheet.cover import assumptions
 from analysis_core.sheet.html import Markup
 from analysis_core.units import DisplayUnits
 
-_JOB, _DEFAULT = "job file", "default of the program"
+_JOB, _DEFAULT = "job file", "default"
 
 
 def assumptions_part(

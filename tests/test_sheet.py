@@ -251,7 +251,7 @@ def test_assumptions_are_listed_with_who_settled_them(read):
     (rows,) = [r for _, r in read.tables if r[0][1][:2] == ["Subject", "Taken as"]]
     settled = {cells[0]: (cells[1], cells[2]) for _, cells in rows[1:]}
     assert settled["Arrangements of actions"][1] == "job file"
-    assert settled["Spans"] == ("between the axes of the bearings", "default of the program")
+    assert settled["Spans"] == ("between the axes of the bearings", "default")
     materials = {c[0] for _, r in read.tables if r[0][1][:2] == ["Material", "Kind"] for _, c in r}
     assert {"Concrete C30/37", "Steel S355"} <= materials
 

@@ -71,7 +71,7 @@ def _row(check: Check, units: DisplayUnits, code: str) -> tuple[Markup | str, ..
         _value(abs(check.demand), check.quantity, units),
         _value(check.resistance, check.quantity, units),
         f"{check.use:.3f}" if math.isfinite(check.use) else "∞",
-        units.number(check.x, "length") if check.source else "–",
+        units.number(check.x, "length") if check.source and check.quantity else "–",
         result,
         f"{clause}\xa0{_UNCONFIRMED}",
     )
@@ -82,7 +82,7 @@ def _working(name: str, check: Check, units: DisplayUnits, *, said: str) -> Mark
     items = [tag("li", _step(step, units)) for step in check.steps]
     governed = f", {check.source}" if check.source else ""
     left = "Not covered: as before." if check.not_covered == said else check.not_covered
-    closing = tag("p", left, class_="aside") if check.not_covered else ""
+    closing = tag("p", symbols(left), class_="aside") if check.not_covered else ""
     return tag(
         "div",
         tag("p", f"{check.name[0].upper()}{check.name[1:]}, {name}{governed}", class_="working"),

@@ -69,11 +69,15 @@ def diagram(kind: _Kind, envelope: LineEnvelope, at: Strip, units: DisplayUnits)
         parts += [tag("path", d=peaks, class_="peaks"), tag("g", texts, class_="value")]
     unit = units.symbol(kind.quantity)
     title = f"{kind.name} [{unit}]"
+    ordinates = [scale * e.value for m in members for e in kind.extremes(m)] + [0.0]
+    above, below = (f(ordinates) for f in (min, max))
+    top = axis + above - _LABEL - 3.0
+    height = below - above + 2.0 * _LABEL + 6.0
     return tag(
         "figure",
         tag(
             "svg", tag("title", f"{kind.name} envelope in {unit}"), parts,
-            viewBox=f"0 0 {WIDTH:g} {2 * axis:g}", role="img", class_="diagram",
+            viewBox=f"0 {top:.0f} {WIDTH:g} {height:.0f}", role="img", class_="diagram",
         ),
         tag("figcaption", title),
     )  # fmt: skip

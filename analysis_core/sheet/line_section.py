@@ -103,6 +103,7 @@ def _bearings(line: Line, names: Mapping[str, str], units: DisplayUnits) -> Mark
         rows,
         caption="Bearings",
         texts=(0, 2, 3, 4),
+        class_="bearings",
     )
 
 

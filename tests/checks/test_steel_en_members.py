@@ -263,3 +263,11 @@ def test_the_moment_beside_shear_is_that_of_a_weaker_web(share, shape, class_):
     found = steel_en_section.reduced_moment(design, FIGURES, 355e6, class_, share)
 
     assert found == pytest.approx(expected, rel=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("stated", "taken"), [(81e9, 81e9), (0.0, 210e9 / 2.6), (1e3, 210e9 / 2.6)]
+)
+def test_a_shear_modulus_that_no_steel_has_is_not_used(stated, taken):
+    design = simple_span(IPE300, replace(S355, shear_modulus=stated), 6.0, 1e3)
+    assert steel_en_lateral.shear_modulus(design) == pytest.approx(taken)
