@@ -160,3 +160,34 @@ def test_axial_force_and_odd_concrete_are_not_checked():
             assert [c.status for c in found] == ["not checked"]
     little = concrete_en.check_concrete(pressed(design, -100e3), EN)
     assert [c.status for c in little] == [c.status for c in concrete_en.check_concrete(design, EN)]
+
+
+def test_the_least_reinforcement_is_that_of_the_clause():
+    # 9.2.1.1(1): C30, f_ctm = 0.30 · 30^(2/3) = 2.896 MPa; 0.26 · 2.896 / 500 = 0.1506 %.
+    design = simple_span(rectangle(0.3, 0.5), C30, 6.0, 0.5e3)
+    check = next(c for c in concrete_en.check_concrete(design, EN) if "sagging" in c.name)
+    steps = {s.symbol: s.value for s in check.steps}
+    assert steps["A_s,min"] == pytest.approx(0.001506 * 0.3 * 0.452, rel=1e-3)
+    assert steps["A_s"] == steps["A_s,min"]
+    aci = next(c for c in concrete_aci.check_concrete(design, ACI) if "sagging" in c.name)
+    # 9.6.1.2: f'c = 4351 psi, 3 sqrt(f'c) = 197.9 < 200 psi; grade 60: 200/60000.
+    depth = 0.5 - (1.5 + 0.375 + 0.375) * 0.0254
+    least = next(s.value for s in aci.steps if s.symbol == "A_s,min")
+    assert least == pytest.approx(200 / 60000 * 0.3 * depth, rel=1e-9)
+
+
+@pytest.mark.parametrize(("span", "part"), [(6.9, 1.0), (7.1, 7.0 / 7.1), (10.0, 0.7)])
+def test_long_spans_and_wide_flanges_lower_the_span_over_depth(span, part):
+    def limit(section):
+        load = 10e3 * (6.0 / span) ** 2  # the same moment, so the same reinforcement
+        design = simple_span(section, C30, span, load)
+        check = next(c for c in concrete_en.check_concrete(design, EN) if "depth" in c.name)
+        steps = {s.symbol: s.value for s in check.steps}
+        return check.resistance, steps["(l/d)_0"]
+
+    found, plain = limit(rectangle(0.3, 0.5))
+    assert found == pytest.approx(part * plain)
+    found, plain = limit(tee(1.2, 0.12, 0.3, 0.5))  # b / b_w = 4 > 3
+    assert found == pytest.approx(0.8 * part * plain)
+    found, plain = limit(tee(0.85, 0.12, 0.3, 0.5))  # 2.8
+    assert found == pytest.approx(part * plain)

@@ -177,3 +177,22 @@ def test_lateral_strength_is_that_of_the_elastic_theory_beyond_the_limit():
 
     # 0.078 = pi^-2 · 2 G/E · ... with G = 11,200 ksi; rts is rounded into it.
     assert found == pytest.approx(exact, rel=0.01)
+
+
+def test_long_boxes_buckle_as_the_theory_of_closed_sections_says():
+    """(F7-11) against pi sqrt(E I_y G J) / L, with E / G = 2.6."""
+    hss = box("HSS 20x4x1/2", 20 * INCH, 4 * INCH, 0.5 * INCH)
+    length = 200.0  # m: far beyond L_r, to be in the elastic branch
+    check = checks(simple_span(hss, A500, length, 1.0))["flexure"]
+    exact = math.pi * E * math.sqrt(hss.inertia_lateral * hss.torsion / 2.6) / length
+
+    assert check.resistance / 0.9 == pytest.approx(exact, rel=0.03)
+    steps = {s.symbol: s.value for s in check.steps}
+    # Where they meet, the moment is 0.7 F_y S; L_p is 0.13 / 2 of where the elastic one is M_p.
+    elastic = check.resistance / 0.9 * length
+    assert steps["L_r"] == pytest.approx(
+        elastic / (0.7 * FY * dict(hss.dimensions)["section_modulus_top"])
+    )
+    assert steps["L_p"] == pytest.approx(
+        0.13 / 2.0 * elastic / (FY * dict(hss.dimensions)["plastic_modulus"])
+    )

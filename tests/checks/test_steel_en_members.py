@@ -271,3 +271,38 @@ def test_the_moment_beside_shear_is_that_of_a_weaker_web(share, shape, class_):
 def test_a_shear_modulus_that_no_steel_has_is_not_used(stated, taken):
     design = simple_span(IPE300, replace(S355, shear_modulus=stated), 6.0, 1e3)
     assert steel_en_lateral.shear_modulus(design) == pytest.approx(taken)
+
+
+def test_the_limits_of_a_web_run_from_pure_bending_to_pure_compression():
+    # EN 1993-1-1 table 5.2, sheet 1, from memory: 72/83 (bending) and 33/38/42 (compression).
+    from analysis_core.checks.working import Working
+
+    design = simple_span(IPE300, S355, 4.0, 5e3)
+    squash = IPE300.area * 355e6
+    crushed, _ = steel_en_section._web_limits(pressed(design, -squash), 355e6, Working())
+    assert crushed == pytest.approx([33.0, 38.0, 42.0])
+    little, _ = steel_en_section._web_limits(pressed(design, -2e3), 355e6, Working())
+    assert little[:2] == pytest.approx([72.0, 83.0], rel=0.01)
+    assert little[2] == pytest.approx(124.0, rel=0.01)
+    # Half of the web's own force: alpha = 0.75, 396 / 8.75 = 45.3 and 456 / 8.75 = 52.1.
+    half = 0.5 * (0.3 - 2 * (0.0107 + 0.015)) * 0.0071 * 355e6
+    found, _ = steel_en_section._web_limits(pressed(design, -half), 355e6, Working())
+    assert found[:2] == pytest.approx([45.26, 52.11], abs=0.01)
+
+
+def test_a_column_held_all_along_is_governed_in_its_plane_with_its_factor():
+    held = simple_span(IPE300, S355, 10.0, 5e3)
+    held = replace(
+        held, restraints=replace(held.restraints, top_continuous=True, bottom_continuous=True)
+    )
+    check = checks(pressed(held, -400e3))["buckling with bending"]
+
+    # By hand, (6.61) with table B.1: slenderness about y over 10 m, curve a (h/b = 2 > 1.2).
+    lam = math.sqrt(53.81e-4 * 355e6 * 100.0 / (math.pi**2 * 210e9 * 8356e-8))
+    phi = 0.5 * (1 + 0.21 * (lam - 0.2) + lam**2)
+    chi = 1 / (phi + math.sqrt(phi**2 - lam**2))
+    n = 400e3 / (chi * 53.81e-4 * 355e6)
+    k = 1 + min(lam - 0.2, 0.8) * n
+    assert check.use == pytest.approx(n + k * 62.5e3 / (628.4e-6 * 355e6), rel=1e-6)
+    assert steel_en_axial.interaction_factor(3, 0.5, 0.4) == pytest.approx(1 + 0.6 * 0.5 * 0.4)
+    assert steel_en_axial.interaction_factor(1, 2.0, 0.4) == pytest.approx(1.32)

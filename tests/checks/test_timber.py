@@ -1,5 +1,7 @@
 """Timber by EN 1995-1-1: durations, slenderness and the worked numbers of a floor joist."""
 
+import math
+
 import pytest
 from designs import C24, rectangle, simple_span
 
@@ -56,3 +58,19 @@ def test_a_slender_beam_without_restraint_loses_strength():
         timber_en.check_timber(free, FIGURES, {})[0].resistance
         < timber_en.check_timber(held, FIGURES, {})[0].resistance
     )
+
+
+def test_the_slenderness_is_that_of_the_theory_of_a_narrow_rectangle():
+    """6.3.3: sigma_crit = pi sqrt(E I_z G I_t) / (l_ef W), with E / G = 16 and I_t = h b³/3."""
+    b, h, length = 0.05, 0.4, 8.0
+    design = simple_span(rectangle(b, h), C24, length, 1e3)
+    (segment,) = timber_en.segments(design, design.fields[0])
+    low = 2.0 / 3.0 * 11e9
+    iz, it, w = h * b**3 / 12, h * b**3 / 3, b * h**2 / 6
+    critical = math.pi * math.sqrt(low * iz * low / 16 * it) / ((length + 2 * h) * w)
+
+    found = timber_en._relative_slenderness(design, segment, "timber")
+
+    # 0.78 in the code stands for pi/4 = 0.785.
+    assert found == pytest.approx(math.sqrt(24e6 / critical), rel=4e-3)
+    assert found == pytest.approx(math.sqrt(24e6 / (0.78 * b**2 * low / (h * 8.8))), rel=1e-12)
