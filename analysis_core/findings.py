@@ -7,6 +7,7 @@ stable; DEVELOPERS.md lists them.
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 from typing import Literal
 
@@ -27,3 +28,11 @@ class Finding:
     message: str
     elements: tuple[str, ...] = ()
     line: str | None = None
+
+
+def listed(names: Iterable[str], *, most: int = 5) -> str:
+    """Return "a, b, c and 4 more", so that a message stays readable."""
+    items = list(names)
+    if len(items) <= most:
+        return ", ".join(items)
+    return f"{', '.join(items[:most])} and {len(items) - most} more"

@@ -44,7 +44,7 @@ def fixed_end_rows(line: Line, units: DisplayUnits) -> list[tuple[str, str, str,
 def _what(member: Member, action: MemberAction, units: DisplayUnits) -> str:
     match action:
         case DistributedForce():
-            ends = [_value(action, action.start), _value(action, action.end)]
+            ends = [action.transverse_at(action.start), action.transverse_at(action.end)]
             size = units.number(ends[0], "line load")
             if abs(ends[0] - ends[1]) > 1e-9 * max(abs(e) for e in ends):
                 size += f" to {units.number(ends[1], 'line load')}"
@@ -97,8 +97,3 @@ def _uniform(action: DistributedForce) -> bool:
 def _whole(action: DistributedForce, length: float) -> bool:
     slack = 1e-9 * length
     return action.start <= slack and action.end >= length - slack
-
-
-def _value(action: DistributedForce, s: float) -> float:
-    v = s - action.start
-    return float(sum(c * v**i for i, c in enumerate(action.transverse)))

@@ -205,6 +205,11 @@ class DistributedForce:
     source: str = ""
     """GlobalId of the action, or where it came from."""
 
+    def transverse_at(self, s: float) -> float:
+        """Intensity in N/m across the member, ``s`` m from its start."""
+        v = s - self.start
+        return float(sum(c * v**i for i, c in enumerate(self.transverse)))
+
 
 @dataclass(frozen=True, slots=True)
 class PointForce:

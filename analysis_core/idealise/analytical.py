@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from analysis_core.building import Building
+from analysis_core.findings import listed
 from analysis_core.idealise.assemblies import assemble
 from analysis_core.idealise.carrying import Contact, Touch, decide
 from analysis_core.idealise.conditions import put_releases, put_supports, vertical_stiffness
 from analysis_core.idealise.draft import Draft
 from analysis_core.idealise.known_marks import keep_marks
-from analysis_core.idealise.log import Log, listed, named
+from analysis_core.idealise.log import Log, named
 from analysis_core.idealise.marks import put_marks
 from analysis_core.idealise.network import network_of
 from analysis_core.idealise.plane_groups import plane_groups

@@ -8,8 +8,9 @@ from dataclasses import dataclass, field
 from functools import lru_cache
 
 from analysis_core.building import Area, Building
+from analysis_core.findings import listed
 from analysis_core.idealise.area_receivers import Receiver, Receivers
-from analysis_core.idealise.log import Log, listed
+from analysis_core.idealise.log import Log
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.plan import Spot
 from analysis_core.idealise.region import Region

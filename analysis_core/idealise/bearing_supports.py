@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+from analysis_core.findings import listed
 from analysis_core.idealise.bearings import Bearing
 from analysis_core.idealise.draft import Draft, DraftJoint
 from analysis_core.idealise.joints import bars_at, end_joint
-from analysis_core.idealise.log import Log, listed
+from analysis_core.idealise.log import Log
 from analysis_core.idealise.physical import PhysicalScheme
 from analysis_core.idealise.spans import Chain, Seating, seat_key
 from analysis_core.model import FREE, RIGID

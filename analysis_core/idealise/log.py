@@ -36,11 +36,3 @@ def named(item: AxisMember | Carrier | Connection) -> str:
     """Return how a message calls an element: its name, and its GlobalId to find it by."""
     name = item.name.strip()
     return f"'{name}' (GlobalId {item.global_id})" if name else f"GlobalId {item.global_id}"
-
-
-def listed(names: Iterable[str], *, most: int = 5) -> str:
-    """Return "a, b, c and 4 more", so that a message stays readable."""
-    items = list(names)
-    if len(items) <= most:
-        return ", ".join(items)
-    return f"{', '.join(items[:most])} and {len(items) - most} more"

@@ -7,13 +7,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from analysis_core.building import AxisMember, Building, Carrier
+from analysis_core.findings import listed
 from analysis_core.idealise.beams import Beam, beam_of
 from analysis_core.idealise.bearing_search import find_bearings
 from analysis_core.idealise.bearings import Bearing, kind_of
 from analysis_core.idealise.chains import End, Link, chains, link_ends
 from analysis_core.idealise.known_marks import keep_marks
 from analysis_core.idealise.legs import Legs
-from analysis_core.idealise.log import Log, listed, named
+from analysis_core.idealise.log import Log, named
 from analysis_core.idealise.marks import put_marks
 from analysis_core.idealise.plan import Spot
 from analysis_core.idealise.properties import PropertyTable

@@ -5,9 +5,10 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass, field
 
+from analysis_core.findings import listed
 from analysis_core.idealise.carrying import Body, Contact, standing
 from analysis_core.idealise.draft import Draft
-from analysis_core.idealise.log import Log, listed
+from analysis_core.idealise.log import Log
 from analysis_core.idealise.properties import PropertyTable
 from analysis_core.model import FREE
 

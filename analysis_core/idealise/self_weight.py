@@ -5,8 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence, Set
 
 from analysis_core.building import Building, LoadCase
+from analysis_core.findings import listed
 from analysis_core.idealise.draft import Draft
-from analysis_core.idealise.log import Log, listed
+from analysis_core.idealise.log import Log
 from analysis_core.idealise.placing import Pair, Placer
 from analysis_core.idealise.properties import Properties, PropertyTable
 from analysis_core.idealise.sharing import shared

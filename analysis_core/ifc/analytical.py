@@ -6,29 +6,21 @@ understood becomes a finding with its GlobalId; nothing is dropped in silence.
 
 from __future__ import annotations
 
-import gc
-from collections.abc import Iterable, Iterator, Mapping
-from contextlib import contextmanager
+from collections.abc import Iterable, Mapping
 from typing import Any
 
 from analysis_core.building import Building
+from analysis_core.findings import listed
 from analysis_core.ifc.analytical_actions import ActionReader
 from analysis_core.ifc.analytical_conditions import ConditionReader
 from analysis_core.ifc.analytical_groups import UNASSIGNED, GroupReader
 from analysis_core.ifc.analytical_members import Local, MemberReader
-from analysis_core.ifc.analytical_notes import (
-    MALFORMED,
-    Notes,
-    global_id,
-    is_kind,
-    listed,
-    name_of,
-    titled,
-)
+from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, is_kind, name_of, titled
 from analysis_core.ifc.analytical_properties import MemberProperties
 from analysis_core.ifc.analytical_surfaces import SurfaceReader
 from analysis_core.ifc.analytical_targets import Target, chained
 from analysis_core.ifc.analytical_topology import Topology
+from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.frames import Frame
 from analysis_core.ifc.ours import RESULT_TYPE
 from analysis_core.ifc.paths import Measures
@@ -53,20 +45,8 @@ def read_analytical(source: Source, settings: Settings | None = None) -> Buildin
     Never raises for what a model holds: see ``Building.findings``.
     """
     notes = Notes()
-    with _without_collections():
+    with collector_paused():
         return _Reader(source, settings or Settings(), notes).building()
-
-
-@contextmanager
-def _without_collections() -> Iterator[None]:
-    """Pause the garbage collector: the many small objects made here all stay."""
-    was_on = gc.isenabled()
-    gc.disable()
-    try:
-        yield
-    finally:
-        if was_on:
-            gc.enable()
 
 
 class _Reader:

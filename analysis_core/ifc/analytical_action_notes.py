@@ -5,14 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Any
 
+from analysis_core.findings import listed
 from analysis_core.ifc.analytical_members import Local
-from analysis_core.ifc.analytical_notes import (
-    Notes,
-    global_id,
-    is_kind,
-    listed,
-    titled,
-)
+from analysis_core.ifc.analytical_notes import Notes, global_id, is_kind, titled
 from analysis_core.ifc.analytical_targets import Target
 from analysis_core.settings import Tolerances
 

@@ -11,17 +11,10 @@ from collections.abc import Mapping
 from typing import Any
 
 from analysis_core.building import Attachment, Axes, Connection, Restraint
+from analysis_core.findings import listed
 from analysis_core.ifc import frames
 from analysis_core.ifc.analytical_members import Local
-from analysis_core.ifc.analytical_notes import (
-    MALFORMED,
-    Notes,
-    global_id,
-    is_kind,
-    listed,
-    name_of,
-    titled,
-)
+from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, is_kind, name_of, titled
 from analysis_core.ifc.analytical_targets import Target
 from analysis_core.ifc.analytical_topology import Topology
 from analysis_core.ifc.file_units import FileUnits

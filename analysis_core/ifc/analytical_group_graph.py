@@ -7,14 +7,8 @@ from collections.abc import Iterator
 from dataclasses import dataclass, field
 from typing import Any
 
-from analysis_core.ifc.analytical_notes import (
-    MALFORMED,
-    Notes,
-    global_id,
-    is_kind,
-    listed,
-    titled,
-)
+from analysis_core.findings import listed
+from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, is_kind, titled
 
 _DEEPEST_NESTING = 60
 _KINDS = {

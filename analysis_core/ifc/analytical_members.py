@@ -8,8 +8,9 @@ from dataclasses import dataclass
 from typing import Any
 
 from analysis_core.building import AxisMember
+from analysis_core.findings import listed
 from analysis_core.ifc import frames
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, listed, name_of, titled
+from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, name_of, titled
 from analysis_core.ifc.analytical_properties import MemberProperties, Properties
 from analysis_core.ifc.analytical_topology import CurvedError, Topology
 from analysis_core.ifc.frames import Frame, Vector

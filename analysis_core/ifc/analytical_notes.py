@@ -105,11 +105,3 @@ def titled(entity: Any) -> str:
     where = f"GlobalId {key}" if key else f"#{entity.id()}"
     name = name_of(entity) if key else ""
     return f"{entity.is_a()} '{name}' ({where})" if name else f"{entity.is_a()} ({where})"
-
-
-def listed(names: Iterable[str], *, most: int = 5) -> str:
-    """Return "a, b, c and 4 more", so that a message stays readable."""
-    items = list(names)
-    if len(items) <= most:
-        return ", ".join(items)
-    return f"{', '.join(items[:most])} and {len(items) - most} more"

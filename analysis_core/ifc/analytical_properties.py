@@ -11,13 +11,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import Any
 
-from analysis_core.ifc.analytical_notes import (
-    MALFORMED,
-    Notes,
-    global_id,
-    is_kind,
-    listed,
-)
+from analysis_core.findings import listed
+from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, is_kind
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.material_choice import NO_CHOICE, Choice
 from analysis_core.ifc.materials import MaterialReader, material_and_profile_of

@@ -7,8 +7,9 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 from analysis_core.building import Area, AreaAction
+from analysis_core.findings import listed
 from analysis_core.ifc.analytical_loads import LoadError, six
-from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, is_kind, listed, name_of
+from analysis_core.ifc.analytical_notes import MALFORMED, Notes, global_id, is_kind, name_of
 from analysis_core.ifc.analytical_targets import axes_of, times, turned
 from analysis_core.ifc.analytical_topology import Chain, Topology
 from analysis_core.ifc.file_units import FileUnits

@@ -2,16 +2,15 @@
 
 from __future__ import annotations
 
-import gc
 import math
-from collections.abc import Callable, Iterable, Iterator
-from contextlib import contextmanager
+from collections.abc import Callable, Iterable
 from typing import Any
 
 import numpy as np
 
 from analysis_core.building import AxisMember, Building
 from analysis_core.ifc.carriers import CarrierReader, check_place
+from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.elements import Elements
 from analysis_core.ifc.end_releases import NOT_STATED, end_releases
 from analysis_core.ifc.frames import point
@@ -52,20 +51,8 @@ def read_physical(source: Source, settings: Settings) -> Building:
     ``analysis.include``) is a member, a carrier or named in a finding.
     """
     # Numbers beyond all measure are caught where they matter; NumPy need not warn as well.
-    with _collector_paused(), np.errstate(all="ignore"):
+    with collector_paused(), np.errstate(all="ignore"):
         return _Reader(source, settings).building()
-
-
-@contextmanager
-def _collector_paused() -> Iterator[None]:
-    """Stop the garbage collector: a bulk read makes many objects and no rubbish."""
-    was_on = gc.isenabled()
-    gc.disable()
-    try:
-        yield
-    finally:
-        if was_on:
-            gc.enable()
 
 
 class _Reader:

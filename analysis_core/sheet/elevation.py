@@ -132,12 +132,7 @@ def _spring_note(support: Support) -> str:
 
 
 def _intensity(action: DistributedForce) -> float:
-    return max(abs(_value(action, action.start)), abs(_value(action, action.end)))
-
-
-def _value(action: DistributedForce, s: float) -> float:
-    v = s - action.start
-    return float(sum(c * v**i for i, c in enumerate(action.transverse)))
+    return max(abs(action.transverse_at(action.start)), abs(action.transverse_at(action.end)))
 
 
 def _distributed(
@@ -147,11 +142,12 @@ def _distributed(
     count = 2 if len(action.transverse) <= 2 else 13
     places = [action.start + (action.end - action.start) * i / (count - 1) for i in range(count)]
     points = [
-        (at.at(index, s), base - _LOAD * abs(_value(action, s)) / (largest or 1.0)) for s in places
+        (at.at(index, s), base - _LOAD * abs(action.transverse_at(s)) / (largest or 1.0))
+        for s in places
     ]
     outline = "".join(f"L{x:.1f},{y:.1f}" for x, y in points)
     path = f"M{points[0][0]:.1f},{base:g}{outline}V{base:g}Z"
-    ends = [_value(action, action.start), _value(action, action.end)]
+    ends = [action.transverse_at(action.start), action.transverse_at(action.end)]
     same = abs(ends[0] - ends[1]) <= 1e-9 * max(map(abs, ends))
     text = units.number(ends[0], "line load")
     if not same:
