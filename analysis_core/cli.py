@@ -30,7 +30,7 @@ from analysis_core.tables import (
 from analysis_core.units import display_units
 
 if TYPE_CHECKING:
-    from analysis_core.ifc.writer import PostReport
+    from analysis_core.ifc.posting.writer import PostReport
 
 OK, INCOMPLETE, FAILED = 0, 1, 2
 

@@ -22,7 +22,7 @@ from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
-from analysis_core.ifc.posted import Posted, known_marks, read_posted
+from analysis_core.ifc.posting.posted import Posted, known_marks, read_posted
 from analysis_core.kept_marks import with_kept_marks
 from analysis_core.line_fingerprints import line_bases
 from analysis_core.model import LineModel
@@ -38,8 +38,8 @@ from analysis_core.units import display_units
 if TYPE_CHECKING:
     from analysis_core.checking import MemberChecks
     from analysis_core.choosing import Choice
+    from analysis_core.ifc.posting.writer import PostReport, RemoveReport
     from analysis_core.ifc.updating import Change
-    from analysis_core.ifc.writer import PostReport, RemoveReport
     from analysis_core.posted_states import PostedState
 
 Progress = Callable[[str, float], None]
@@ -259,7 +259,7 @@ def post(
     none.  Raises IfcWriteError, JobError.
     """
     from analysis_core.effects.stations import stations
-    from analysis_core.ifc import writer  # posting is not always wanted; keep the start quick
+    from analysis_core.ifc.posting import writer  # not always wanted; keep the start quick
 
     def section_forces(result: LineResult) -> Stations:
         assert result.solution is not None  # only asked for lines that were solved
@@ -279,7 +279,7 @@ def post(
 
 def remove(source: str | Path, target: str | Path) -> RemoveReport:
     """Write a copy of a model without anything that was posted.  Raises IfcWriteError."""
-    from analysis_core.ifc import writer
+    from analysis_core.ifc.posting import writer
 
     return writer.remove(source, target)
 
@@ -351,7 +351,7 @@ def lightest(
     JobError.
     """
     from analysis_core import choosing
-    from analysis_core.ifc import candidates
+    from analysis_core.ifc.updating import candidates
     from analysis_core.job import with_section_table
 
     settings = settings or Settings()
@@ -545,10 +545,10 @@ def _read(source: ifc_source.Source, settings: Settings) -> Building:
     if route == "auto":
         route = "analytical" if source.has_analysis_model else "physical"
     if route == "analytical":
-        from analysis_core.ifc.analytical import read_analytical
+        from analysis_core.ifc.analytical.reader import read_analytical
 
         return read_analytical(source, settings)
-    from analysis_core.ifc.physical import read_physical
+    from analysis_core.ifc.physical.reader import read_physical
 
     return read_physical(source, settings)
 

@@ -11,7 +11,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from analysis_core.fingerprints import differences, fingerprint
-from analysis_core.ifc.posted import Posted
+from analysis_core.ifc.posting.posted import Posted
 from analysis_core.model import Line, LineModel
 
 State = Literal["current", "stale", "not posted"]

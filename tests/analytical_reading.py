@@ -9,7 +9,7 @@ from ifc_makers import AnalysisFile, Model
 
 from analysis_core.building import Building
 from analysis_core.findings import Finding
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
 from analysis_core.ifc.source import open_model
 from analysis_core.settings import Settings
 

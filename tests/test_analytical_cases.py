@@ -19,7 +19,7 @@ from ifc_makers import (
     continuous_beam,
 )
 
-from analysis_core.ifc.analytical_groups import UNASSIGNED
+from analysis_core.ifc.analytical.groups import UNASSIGNED
 
 LOAD = (0.0, 0.0, -1e3)
 

@@ -22,7 +22,7 @@ from ifc_makers import (
     pinned,
 )
 
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
 from analysis_core.ifc.source import open_model
 
 

@@ -22,7 +22,7 @@ from ifc_makers import (
     fixed,
 )
 
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
 from analysis_core.ifc.source import open_model
 
 START, END = (1.0, 2.0, 3.0), (1.0, 6.0, 6.0)

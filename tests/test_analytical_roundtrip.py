@@ -29,7 +29,7 @@ from ifc_makers import (
 )
 
 from analysis_core.building import AxisAction, Building, NodeAction, TemperatureAction
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
 from analysis_core.ifc.source import open_model
 
 SHARED = Path(__file__).parents[2] / "shared" / "ifc"

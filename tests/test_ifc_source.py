@@ -174,7 +174,7 @@ def test_an_encrypted_zip_is_refused(path: Path) -> None:
 def test_a_zip_that_unpacks_to_too_much_is_refused(
     path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
-    monkeypatch.setattr("analysis_core.ifc.file_bytes.LARGEST_MODEL", 100)
+    monkeypatch.setattr("analysis_core.ifc.step.file_bytes.LARGEST_MODEL", 100)
     assert "at most 100" in refusal(path, zipped(path, a_ifc=small()))
 
 
@@ -511,7 +511,7 @@ import random, sys
 from pathlib import Path
 sys.path[:0] = {paths!r}
 from analysis_core.errors import IfcReadError
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
 from analysis_core.ifc.source import open_model
 
 content, path, rng = Path({source!r}).read_bytes(), Path({target!r}), random.Random({seed})

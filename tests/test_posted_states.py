@@ -8,7 +8,7 @@ import pytest
 
 from analysis_core import distribution, pipeline
 from analysis_core.cli import main
-from analysis_core.ifc.posted import read_posted
+from analysis_core.ifc.posting.posted import read_posted
 from analysis_core.ifc.source import open_model
 from analysis_core.job import load, parse
 

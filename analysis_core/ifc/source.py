@@ -14,11 +14,11 @@ import numpy as np
 
 from analysis_core.errors import IfcReadError
 from analysis_core.findings import Finding
-from analysis_core.ifc.file_bytes import read_bytes
 from analysis_core.ifc.file_units import FileUnits, read_units
 from analysis_core.ifc.schema_fit import check_fit, parser_schema, public_name
-from analysis_core.ifc.step_census import Ints
-from analysis_core.ifc.step_text import StepText, line_of, read_step
+from analysis_core.ifc.step.census import Ints
+from analysis_core.ifc.step.file_bytes import read_bytes
+from analysis_core.ifc.step.text import StepText, line_of, read_step
 
 _parser: Any = ifcopenshell.open  # its published overloads leave out ``lazy``
 _ROOTED = re.compile(rb"\(\s*'([0-9A-Za-z_$]{22})'\s*,")
@@ -49,7 +49,7 @@ class Source:
 
         Our own is the idealisation of an earlier revision; it must not stand in for the building.
         """
-        from analysis_core.ifc.ours import MODEL_TYPE  # what is ours is known to the writer
+        from analysis_core.ifc.posting.ours import MODEL_TYPE  # what is ours is known to the writer
 
         members = self.file.by_type("IfcStructuralCurveMember")
         return any(member.ObjectType != MODEL_TYPE for member in members)

@@ -32,7 +32,7 @@ sys.path[:0] = [str(HERE), str(HERE.parents[1])]
 from synthetic import write_frame  # noqa: E402 -- found beside this file
 
 from analysis_core import pipeline  # noqa: E402
-from analysis_core.ifc import writer  # noqa: E402
+from analysis_core.ifc.posting import writer  # noqa: E402
 from analysis_core.results import Outcome  # noqa: E402
 from analysis_core.settings import (  # noqa: E402
     ActionSetting,

@@ -29,7 +29,7 @@ def measure(what: str, path: str) -> None:
     """Print seconds and peak memory (MB) of one kind of work in this process."""
     import ifcopenshell
 
-    from analysis_core.ifc.physical import read_physical
+    from analysis_core.ifc.physical.reader import read_physical
     from analysis_core.ifc.source import open_model
     from analysis_core.settings import Settings
 

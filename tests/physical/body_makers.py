@@ -9,7 +9,7 @@ from typing import Any
 import ifcopenshell
 import ifcopenshell.guid
 
-from analysis_core.ifc.physical import read_physical
+from analysis_core.ifc.physical.reader import read_physical
 from analysis_core.ifc.source import open_model
 from analysis_core.settings import Settings
 

@@ -7,8 +7,8 @@ import pytest
 from body_makers import Maker
 from scipy.special import fresnel
 
-from analysis_core.ifc.curves import read_path
-from analysis_core.ifc.paths import Measures, closed_loop, sampled
+from analysis_core.ifc.geometry.curves import read_path
+from analysis_core.ifc.geometry.paths import Measures, closed_loop, sampled
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
 MM = Measures(1e-3)

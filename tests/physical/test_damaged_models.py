@@ -8,7 +8,7 @@ import pytest
 from body_makers import Maker, box_faces, box_points
 
 from analysis_core.errors import IfcReadError
-from analysis_core.ifc.physical import read_physical
+from analysis_core.ifc.physical.reader import read_physical
 from analysis_core.ifc.source import open_model
 from analysis_core.settings import AreaActionSetting, Selector, Settings
 

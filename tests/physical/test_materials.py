@@ -4,8 +4,8 @@ import pytest
 from body_makers import Maker
 
 from analysis_core.ifc.file_units import read_units
-from analysis_core.ifc.material_table import known_material
-from analysis_core.ifc.materials import material_and_profile_of, read_material
+from analysis_core.ifc.materials.reader import material_and_profile_of, read_material
+from analysis_core.ifc.materials.table import known_material
 from analysis_core.ifc.source import open_model
 from analysis_core.settings import MaterialSetting, Settings
 

@@ -6,7 +6,8 @@ import numpy as np
 import pytest
 import sympy
 
-from analysis_core.ifc import outline, slices
+from analysis_core.ifc.geometry import outline
+from analysis_core.ifc.sections import slices
 from analysis_core.ifc.unreadable import UnreadableShapeError
 
 

@@ -9,9 +9,9 @@ import pytest
 from body_makers import Maker
 
 from analysis_core.ifc.file_units import read_units
-from analysis_core.ifc.outline import flattened
-from analysis_core.ifc.profiles import ProfileDrawer
-from analysis_core.ifc.sections import SectionReader, measures_of, read_section
+from analysis_core.ifc.geometry.outline import flattened
+from analysis_core.ifc.sections.profiles import ProfileDrawer
+from analysis_core.ifc.sections.reader import SectionReader, measures_of, read_section
 
 PARAMETRIC = {
     "rectangle": ("IfcRectangleProfileDef", {"XDim": 120, "YDim": 310}),

@@ -13,7 +13,7 @@ import numpy as np
 import pytest
 from body_makers import Maker
 
-from analysis_core.ifc.physical import read_physical
+from analysis_core.ifc.physical.reader import read_physical
 from analysis_core.ifc.source import open_model
 from analysis_core.settings import BeamRules, Settings, Tolerances
 

@@ -11,7 +11,7 @@ import pytest
 from body_makers import Maker
 
 from analysis_core.ifc.file_units import read_units
-from analysis_core.ifc.sections import read_section
+from analysis_core.ifc.sections.reader import read_section
 
 CM = 100.0  # metres to centimetres
 INCH = 1.0 / 0.0254

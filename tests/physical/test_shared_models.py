@@ -11,7 +11,7 @@ import numpy as np
 import pytest
 
 from analysis_core.errors import IfcReadError
-from analysis_core.ifc.physical import read_physical
+from analysis_core.ifc.physical.reader import read_physical
 from analysis_core.ifc.source import open_model
 from analysis_core.settings import Settings
 

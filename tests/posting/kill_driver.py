@@ -15,7 +15,7 @@ from pathlib import Path
 
 from posting_makers import BEAM, SECOND_BEAM, outcome_of, small_model, span_result
 
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 
 NOON = datetime(2031, 5, 4, 12, 0, 0, tzinfo=UTC)
 PADDING = 30_000

@@ -18,7 +18,7 @@ from posting_makers import (
     span_result,
 )
 
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 
 NOON = datetime(2031, 5, 4, 12, 0, 0, tzinfo=UTC)
 LATER = datetime(2031, 5, 4, 13, 30, 0, tzinfo=UTC)

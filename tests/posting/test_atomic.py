@@ -15,8 +15,9 @@ import pytest
 from posting_makers import BEAM, SECOND_BEAM, outcome_of, small_model, span_result
 
 from analysis_core.errors import IfcReadError, IfcWriteError
-from analysis_core.ifc import atomic, writer
-from analysis_core.ifc.posting import Posting
+from analysis_core.ifc.posting import writer
+from analysis_core.ifc.posting.posting import Posting
+from analysis_core.ifc.step import atomic
 
 HERE = Path(__file__).parent
 OUTCOME = outcome_of(span_result(BEAM))
@@ -53,7 +54,7 @@ def test_killed_at_two_hundred_random_moments_it_leaves_the_old_file_or_the_new(
 POST_ONE = """
 import sys
 from posting_makers import *
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 elements = (BEAM, SECOND_BEAM, COLUMN_A, COLUMN_B)
 lines = [span_result(e, mark=f"B-{i}", load=1e3 * (i + 1)) for i, e in enumerate(elements)]
 print("ready", flush=True)

@@ -16,9 +16,9 @@ from posting_makers import (
 )
 
 from analysis_core.errors import IfcReadError
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 from analysis_core.ifc.source import open_model
-from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step.index import StepIndex
 
 OUTCOME = outcome_of(span_result(BEAM, supports=(COLUMN_A,)))
 

@@ -18,7 +18,7 @@ from posting_makers import (
     span_result,
 )
 
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 
 
 def posted(tmp_path, outcome, schema="IFC4", **options):

@@ -14,8 +14,8 @@ from posting_makers import (
     with_case_ids,
 )
 
-from analysis_core.ifc import writer
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
+from analysis_core.ifc.posting import writer
 from analysis_core.ifc.source import open_model
 from analysis_core.results import Stations
 

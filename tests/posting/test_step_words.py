@@ -11,10 +11,10 @@ import pytest
 from posting_makers import small_model
 
 from analysis_core.ifc.global_ids import NAMESPACE, derived_ids, global_ids
-from analysis_core.ifc.number_text import printed
-from analysis_core.ifc.step_index import StepIndex
-from analysis_core.ifc.step_tokens import arguments, rendered
-from analysis_core.ifc.step_values import decoded, real, reals, string
+from analysis_core.ifc.step.index import StepIndex
+from analysis_core.ifc.step.number_text import printed
+from analysis_core.ifc.step.tokens import arguments, rendered
+from analysis_core.ifc.step.values import decoded, real, reals, string
 
 TEXTS = [
     "", "plain", "it's", "back\\slash", "\\X2\\0041\\X0\\", "tab\tand\r\nline", "Träger", "梁",

@@ -7,7 +7,7 @@ import pytest
 from posting_makers import outcome_of, span_result
 
 from analysis_core.errors import IfcReadError
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 from analysis_core.ifc.source import open_model
 
 ROOT = Path(__file__).resolve().parents[2]

@@ -16,7 +16,7 @@ from posting_makers import (
     with_case_ids,
 )
 
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 
 OUTCOME = outcome_of(span_result(BEAM, supports=(COLUMN_A,)))
 

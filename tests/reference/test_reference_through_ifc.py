@@ -21,7 +21,7 @@ from test_reference_values import FILES, RELATIVE, _scales
 from analysis_core import distribution
 from analysis_core.errors import MechanismError, ModelError
 from analysis_core.idealise import idealise
-from analysis_core.ifc.analytical import read_analytical
+from analysis_core.ifc.analytical.reader import read_analytical
 from analysis_core.ifc.source import open_model
 from analysis_core.model import Line, LineModel
 

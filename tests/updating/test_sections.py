@@ -24,7 +24,7 @@ from update_makers import (
 
 from analysis_core import pipeline
 from analysis_core.errors import JobError
-from analysis_core.ifc import writer
+from analysis_core.ifc.posting import writer
 
 # The validator leaves its own rule files to the garbage collector.
 pytestmark = pytest.mark.filterwarnings(

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from typing import Any
 
-from analysis_core.ifc.material_choice import Choice, choose
+from analysis_core.ifc.materials.choice import Choice, choose
 from analysis_core.ifc.updating.editor import Editor
 
 _DEEPEST_NESTING = 10

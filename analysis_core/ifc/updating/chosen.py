@@ -7,7 +7,7 @@ from collections.abc import Iterable, Mapping
 from typing import Any
 
 from analysis_core.errors import JobError
-from analysis_core.ifc.sections import SectionReader, measures_of
+from analysis_core.ifc.sections.reader import SectionReader, measures_of
 from analysis_core.ifc.updating.editor import Editor
 from analysis_core.model import Section
 from analysis_core.settings import MaterialSetting, Settings, TableSection

@@ -12,7 +12,7 @@ from typing import Any
 from analysis_core.errors import IfcWriteError
 from analysis_core.ifc.global_ids import global_id
 from analysis_core.ifc.source import Source
-from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step.index import StepIndex
 
 _LARGEST_NUMBER = 2**31 - 1
 # What refers to a shape without being part of the building: its style and its layer.

@@ -9,11 +9,11 @@ from pathlib import Path
 from typing import Any
 
 from analysis_core.errors import IfcReadError, JobError
-from analysis_core.ifc.container import read_container
-from analysis_core.ifc.material_choice import choose
+from analysis_core.ifc.materials.choice import choose
 from analysis_core.ifc.relations import Relations
 from analysis_core.ifc.source import open_model
-from analysis_core.ifc.step_index import StepIndex
+from analysis_core.ifc.step.container import read_container
+from analysis_core.ifc.step.index import StepIndex
 from analysis_core.ifc.unreadable import READ_ERRORS, reason_of
 from analysis_core.ifc.updating.associations import (
     associate,

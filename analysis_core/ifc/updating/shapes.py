@@ -14,7 +14,7 @@ from typing import Any
 
 import numpy as np
 
-from analysis_core.ifc.sections import Profile, SectionReader
+from analysis_core.ifc.sections.reader import Profile, SectionReader
 from analysis_core.ifc.unreadable import UnreadableShapeError
 from analysis_core.ifc.updating.editor import Editor
 

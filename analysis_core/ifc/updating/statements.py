@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from analysis_core.ifc.file_units import UnitError
-from analysis_core.ifc.property_sets import PREFIX
+from analysis_core.ifc.posting.property_sets import PREFIX
 from analysis_core.ifc.updating.editor import Editor
 from analysis_core.model import Section
 

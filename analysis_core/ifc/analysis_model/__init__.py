@@ -1,0 +1,1 @@
+"""The idealisation as an analysis model of the open standard."""

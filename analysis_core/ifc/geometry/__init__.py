@@ -1,0 +1,1 @@
+"""Curves, outlines and placements of the standard, in metres."""

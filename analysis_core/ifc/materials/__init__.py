@@ -1,0 +1,1 @@
+"""What products are made of, and how stiff, dense and strong that is."""

@@ -1,0 +1,1 @@
+"""The physical way in: what the model draws becomes a Building."""

@@ -1,0 +1,1 @@
+"""What an outcome becomes in a model file: property sets, result groups, and out again."""

@@ -1,0 +1,1 @@
+"""Profiles of the standard as outlines, and what their sections are worth."""

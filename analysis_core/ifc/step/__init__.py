@@ -1,0 +1,1 @@
+"""The bytes of a STEP file: read, proven, indexed, added to and replaced as a whole."""
