@@ -18,15 +18,15 @@ from typing import TYPE_CHECKING, Any
 from analysis_core import __version__, pipeline
 from analysis_core.errors import AnalysisError, JobError
 from analysis_core.output_paths import check_outputs
-from analysis_core.results import Outcome
-from analysis_core.settings import Settings
-from analysis_core.tables import (
+from analysis_core.report.tables import (
     CAUTION,
     balance_text,
     findings_text,
     safe,
     survey_text,
 )
+from analysis_core.results import Outcome
+from analysis_core.settings import Settings
 from analysis_core.units import display_units
 
 if TYPE_CHECKING:
@@ -281,7 +281,7 @@ def _balance(options: argparse.Namespace) -> int:
     text = balance_text(outcome, units)
     checked = None
     if options.checks:
-        from analysis_core.checks_report import checks_text
+        from analysis_core.report.checks import checks_text
 
         checked = pipeline.checks(outcome, settings)
         text += "\n\n" + checks_text(outcome, checked, units)
@@ -290,7 +290,7 @@ def _balance(options: argparse.Namespace) -> int:
     if options.issues:
         _write_bytes(Path(options.issues), pipeline.issues(outcome, checked))
     if options.record:
-        from analysis_core.record_text import record_text
+        from analysis_core.report.record_text import record_text
 
         text = record_text(pipeline.records(outcome), units) + "\n\n" + text
     _put(
@@ -302,7 +302,7 @@ def _balance(options: argparse.Namespace) -> int:
 
 
 def _lightest(options: argparse.Namespace, settings: Settings) -> int:
-    from analysis_core.choosing_report import choices_data, choices_text
+    from analysis_core.report.choices import choices_data, choices_text
 
     choices = pipeline.lightest(
         options.model, options.lightest, settings, marks=options.line, alike=options.alike,
@@ -405,8 +405,8 @@ def _tell_posted(report: PostReport, target: Path) -> None:
 
 
 def _reconcile(options: argparse.Namespace) -> int:
-    from analysis_core import revision_report as report
-    from analysis_core.revision import of_lines
+    from analysis_core.report import changes as report
+    from analysis_core.revision.reconcile import of_lines
 
     settings = _settings(options)
     found = pipeline.reconcile(options.before, options.after, settings, progress=_progress())
@@ -457,7 +457,7 @@ def _status(outcome: Outcome) -> int:
 def _settings(options: argparse.Namespace) -> Settings:
     if options.job is None:
         return Settings()
-    from analysis_core.job import load  # YAML is only loaded when there is a job file
+    from analysis_core.job.reader import load  # YAML is only loaded when there is a job file
 
     settings = load(options.job)
     rules = settings.rules

@@ -11,8 +11,8 @@ from analysis_core.building import Building
 from analysis_core.errors import IfcWriteError, JobError
 from analysis_core.ifc.updating import Change, Wish
 from analysis_core.model import LineModel
+from analysis_core.report.tables import safe, table
 from analysis_core.settings import Settings
-from analysis_core.tables import safe, table
 
 if TYPE_CHECKING:
     from analysis_core.ifc.updating import Updated

@@ -15,32 +15,32 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from analysis_core import idealise
-from analysis_core.area_reduction import reduced_by_area
 from analysis_core.building import Building
-from analysis_core.combining import choose, with_combinations
+from analysis_core.checking.slab_restraint import held_by_slabs
 from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
 from analysis_core.findings import Finding
 from analysis_core.ifc import source as ifc_source
 from analysis_core.ifc.posting.posted import Posted, known_marks, read_posted
-from analysis_core.kept_marks import with_kept_marks
-from analysis_core.line_fingerprints import line_bases
 from analysis_core.model import LineModel
 from analysis_core.results import LineResult, Outcome, Stations
-from analysis_core.revision import Reconciliation, marks_before
-from analysis_core.revision import reconcile as compare
+from analysis_core.revision.kept_marks import with_kept_marks
+from analysis_core.revision.line_fingerprints import line_bases
+from analysis_core.revision.reconcile import Reconciliation, marks_before
+from analysis_core.revision.reconcile import reconcile as compare
 from analysis_core.settings import Settings
-from analysis_core.slab_restraint import held_by_slabs
-from analysis_core.solving import Memory, solve_lines
-from analysis_core.stacks import Standing, received, standing_elements
+from analysis_core.solving.area_reduction import reduced_by_area
+from analysis_core.solving.combining import choose, with_combinations
+from analysis_core.solving.lines import Memory, solve_lines
+from analysis_core.solving.stacks import Standing, received, standing_elements
 from analysis_core.units import display_units
 
 if TYPE_CHECKING:
-    from analysis_core.checking import MemberChecks
-    from analysis_core.choosing import Choice
+    from analysis_core.checking.choosing import Choice
+    from analysis_core.checking.members import MemberChecks
     from analysis_core.ifc.posting.writer import PostReport, RemoveReport
     from analysis_core.ifc.updating import Change
-    from analysis_core.posted_states import PostedState
+    from analysis_core.revision.posted_states import PostedState
 
 Progress = Callable[[str, float], None]
 
@@ -208,8 +208,8 @@ def solve(
 
 def posted_states(found: Survey, settings: Settings) -> dict[str, PostedState]:
     """Return by mark whether the results in the file hold, without solving.  Raises JobError."""
-    from analysis_core.posted_states import PostedState
-    from analysis_core.posted_states import posted_states as states
+    from analysis_core.revision.posted_states import PostedState
+    from analysis_core.revision.posted_states import posted_states as states
 
     if not found.posted:
         return {line.mark: PostedState("not posted") for line in found.model.lines}
@@ -329,7 +329,7 @@ def update_members(
 
 def checks(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks, ...]]:
     """Return the checks of the members of each balanced line by its mark.  Raises JobError."""
-    from analysis_core.checking import check_lines
+    from analysis_core.checking.members import check_lines
 
     return check_lines(outcome, settings)
 
@@ -350,9 +350,9 @@ def lightest(
     all of its section and material; every kind of lines where empty.  Raises IfcReadError,
     JobError.
     """
-    from analysis_core import choosing
+    from analysis_core.checking import choosing
     from analysis_core.ifc.updating import candidates
-    from analysis_core.job import with_section_table
+    from analysis_core.job.reader import with_section_table
 
     settings = settings or Settings()
     if table not in ("model", "job"):
@@ -382,11 +382,11 @@ def document(
     checks: Mapping[str, tuple[MemberChecks, ...]] | None = None,
 ) -> dict[str, Any]:
     """Return the results file as plain data, with the checks of members where given."""
-    from analysis_core.results_file import results_document
+    from analysis_core.report.results_file import results_document
 
     data = results_document(outcome, stations=stations)
     if checks is not None:
-        from analysis_core.checks_report import checks_data
+        from analysis_core.report.checks import checks_data
 
         for line in data["lines"]:
             line["checks"] = checks_data(checks.get(line["mark"], ()))
@@ -431,7 +431,7 @@ def of_lines(outcome: Outcome, marks: Sequence[str]) -> Outcome:
 
 def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
     """Return the calculation sheet as HTML; ``date`` as shown, today where empty."""
-    from analysis_core.calculation import calculation_sheet
+    from analysis_core.calculation.composition import calculation_sheet
 
     units = display_units(settings.display.system, settings.display.units)
     today = date or datetime.now().date().isoformat()
@@ -440,8 +440,8 @@ def sheet(outcome: Outcome, settings: Settings, *, date: str = "") -> str:
 
 def reactions_csv(outcome: Outcome, settings: Settings) -> str:
     """Return the schedule of reactions as CSV in display units."""
-    from analysis_core.csv_text import csv_text
     from analysis_core.effects.reactions import schedule, schedule_table
+    from analysis_core.report.csv_text import csv_text
 
     units = display_units(settings.display.system, settings.display.units)
     return csv_text(schedule_table(schedule(outcome.lines), units, outcome.model.names))
@@ -449,14 +449,14 @@ def reactions_csv(outcome: Outcome, settings: Settings) -> str:
 
 def issues(outcome: Outcome, checks: Mapping[str, tuple[MemberChecks, ...]] | None = None) -> bytes:
     """Return findings and failed checks as a BCF file."""
-    from analysis_core.issues import bcf_bytes, issues_of
+    from analysis_core.report.issues import bcf_bytes, issues_of
 
     return bcf_bytes(outcome, issues_of(outcome, checks))
 
 
 def job_text(found: Survey, settings: Settings) -> str:
     """Return a starting job file for a survey, as YAML text."""
-    from analysis_core.job_out import job_text as text
+    from analysis_core.report.job import job_text as text
 
     physical = found.route == "physical"
     return text(found.model, file=found.file, rules=settings.rules.name, physical=physical)
@@ -497,8 +497,8 @@ def rules_text(name: str | None, replaced: Mapping[str, object] | None = None) -
     ``replaced``: figures that a project puts its own in place of.  Raises JobError.
     """
     from analysis_core import rules
-    from analysis_core.checking import TITLES
-    from analysis_core.checks_report import figures_text
+    from analysis_core.checking.members import TITLES
+    from analysis_core.report.checks import figures_text
 
     if name is None:
         titles = {key: rules.load(key).title for key in rules.names()}
@@ -514,7 +514,7 @@ def rules_text(name: str | None, replaced: Mapping[str, object] | None = None) -
 
 def is_check_code(name: str) -> bool:
     """Whether this is the name of a code that members are checked by."""
-    from analysis_core.checking import TITLES
+    from analysis_core.checking.members import TITLES
 
     return name in TITLES
 
@@ -524,8 +524,8 @@ def rules_document(
 ) -> dict[str, Any]:
     """Return what ``rules_text`` says as plain data, ready for JSON.  Raises JobError."""
     from analysis_core import rules
-    from analysis_core.checking import TITLES
-    from analysis_core.checks_report import figures_data
+    from analysis_core.checking.members import TITLES
+    from analysis_core.report.checks import figures_data
 
     head = {"format": "spanledger-rules", "version": 1}
     if name is not None and name in TITLES:

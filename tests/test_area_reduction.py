@@ -6,7 +6,7 @@ from pathlib import Path
 import pytest
 
 from analysis_core import pipeline
-from analysis_core.job import parse
+from analysis_core.job.reader import parse
 
 MODEL = Path(__file__).resolve().parents[1] / "sample_models" / "quarry_lane_physical_ifc4.ifc"
 JOB = """

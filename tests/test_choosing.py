@@ -6,9 +6,10 @@ from pathlib import Path
 
 import pytest
 
-from analysis_core import choosing, pipeline
+from analysis_core import pipeline
+from analysis_core.checking import choosing
 from analysis_core.cli import main
-from analysis_core.job import load
+from analysis_core.job.reader import load
 from analysis_core.model import DistributedForce
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"

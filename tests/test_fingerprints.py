@@ -4,7 +4,6 @@ from dataclasses import replace
 
 import pytest
 
-from analysis_core.fingerprints import basis, differences, fingerprint
 from analysis_core.model import (
     Combination,
     DistributedForce,
@@ -16,6 +15,7 @@ from analysis_core.model import (
     Section,
     Support,
 )
+from analysis_core.revision.fingerprints import basis, differences, fingerprint
 from analysis_core.settings import Analysis, Settings
 
 SECTION = Section("R 300x500", "rectangle", 0.15, 3.125e-3, depth=0.5, width=0.3)

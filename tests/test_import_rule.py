@@ -31,19 +31,16 @@ MAY_IMPORT: dict[str, frozenset[str]] = {
     **dict.fromkeys(SOLVERS, DATA),
     "ifc": DATA,
     # Rule sets are read like job files and name the arrangements that effects knows.
-    "rules": DATA | {"job", "job_check", "effects"},
-    "job": PLAIN | {"job_check", "job_sections"},
-    "job_sections": PLAIN,
-    "job_check": PLAIN,
-    "job_edit": PLAIN | {"job"},
+    "rules": DATA | {"job", "effects"},
+    "job": PLAIN,
 }
 # Third parties by the only parts that may use them.
 THIRD_PARTIES: dict[str, frozenset[str] | None] = {
     "numpy": None,
     "ifcopenshell": frozenset({"ifc"}),
-    "yaml": frozenset({"job", "job_edit", "rules"}),
+    "yaml": frozenset({"job", "rules"}),
 }
-WITHOUT_NUMPY = PLAIN | {"sheet", "rules", "job", "job_check", "job_edit", "job_sections"}
+WITHOUT_NUMPY = PLAIN | {"sheet", "rules", "job"}
 
 
 def test_every_part_of_the_core_imports_only_what_it_may():

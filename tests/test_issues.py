@@ -10,8 +10,8 @@ from bcf.v2.bcfxml import BcfXml
 
 from analysis_core import pipeline
 from analysis_core.findings import Finding
-from analysis_core.issues import bcf_bytes, camera, issues_of
-from analysis_core.job import load
+from analysis_core.job.reader import load
+from analysis_core.report.issues import bcf_bytes, camera, issues_of
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 

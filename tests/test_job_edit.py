@@ -2,9 +2,9 @@
 
 import pytest
 
-from analysis_core import job
 from analysis_core.errors import JobError
-from analysis_core.job_edit import (
+from analysis_core.job import reader as job
+from analysis_core.job.edit import (
     entries,
     stated,
     with_entry,

@@ -7,7 +7,7 @@ import pytest
 
 from analysis_core import pipeline
 from analysis_core.cli import main
-from analysis_core.job import load
+from analysis_core.job.reader import load
 
 ROOT = Path(__file__).resolve().parents[1]
 SAMPLES = ROOT / "sample_models"

@@ -6,8 +6,8 @@ from math import inf
 import pytest
 
 from analysis_core.findings import Finding
-from analysis_core.kept_marks import with_kept_marks
 from analysis_core.model import Joint, Line, LineModel, Member, Piece, Support, Transfer
+from analysis_core.revision.kept_marks import with_kept_marks
 
 
 def line(mark, *elements):

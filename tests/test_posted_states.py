@@ -10,7 +10,7 @@ from analysis_core import distribution, pipeline
 from analysis_core.cli import main
 from analysis_core.ifc.posting.posted import read_posted
 from analysis_core.ifc.source import open_model
-from analysis_core.job import load, parse
+from analysis_core.job.reader import load, parse
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 JOB = SAMPLES / "quarry_lane.yaml"

@@ -4,7 +4,8 @@ from pathlib import Path
 
 import pytest
 
-from analysis_core import job, pipeline
+from analysis_core import pipeline
+from analysis_core.job import reader as job
 
 MODEL = Path(__file__).resolve().parents[1] / "sample_models" / "quarry_lane_physical_ifc4.ifc"
 

@@ -11,7 +11,7 @@ import pytest
 
 from analysis_core import pipeline
 from analysis_core.cli import main
-from analysis_core.job import load
+from analysis_core.job.reader import load
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 PHYSICAL = SAMPLES / "quarry_lane_physical_ifc4.ifc"

@@ -14,7 +14,7 @@ import numpy as np
 import pytest
 
 from analysis_core import pipeline
-from analysis_core.job import load
+from analysis_core.job.reader import load
 from analysis_core.settings import Settings
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"

@@ -10,7 +10,7 @@ import pytest
 
 from analysis_core import pipeline
 from analysis_core.cli import main
-from analysis_core.job import load, parse
+from analysis_core.job.reader import load, parse
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 MODEL = SAMPLES / "quarry_lane_physical_ifc4.ifc"
@@ -238,7 +238,7 @@ def test_the_points_left_out_of_a_diagram_lie_on_its_lines():
 
 
 def test_the_summary_names_the_largest_use_of_each_line(outcome, read):
-    from analysis_core.checking import check_lines
+    from analysis_core.checking.members import check_lines
 
     (rows,) = [r for _, r in read.tables if r[0][1] and r[0][1][0] == "Line"]
     uses = {cells[0]: cells[-2] for _, cells in rows[2:]}

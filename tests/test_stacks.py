@@ -6,8 +6,8 @@ import pytest
 
 from analysis_core import pipeline
 from analysis_core.building import Building, Carrier
-from analysis_core.job import load, parse
-from analysis_core.stacks import standing_elements
+from analysis_core.job.reader import load, parse
+from analysis_core.solving.stacks import standing_elements
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 

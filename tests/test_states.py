@@ -8,8 +8,8 @@ import pytest
 from analysis_core import pipeline
 from analysis_core.distribution import solve
 from analysis_core.effects.states import state_line, state_stations
-from analysis_core.job import load
-from analysis_core.line_details import detail_of
+from analysis_core.job.reader import load
+from analysis_core.solving.line_details import detail_of
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 

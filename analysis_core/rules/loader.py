@@ -13,8 +13,8 @@ from pathlib import Path
 from typing import Any
 
 from analysis_core.errors import JobError
-from analysis_core.job import read_yaml
-from analysis_core.job_check import check
+from analysis_core.job.check import check
+from analysis_core.job.reader import read_yaml
 from analysis_core.rules.model import (
     PSI,
     ActionClass,
@@ -73,7 +73,7 @@ def _parsed(text: str) -> RuleSet:
 
 def schema() -> dict[str, Any]:
     """Return the JSON schema of a rule set."""
-    source = resources.files("analysis_core").joinpath("rule_schema.json")
+    source = resources.files("analysis_core.rules").joinpath("rule_schema.json")
     loaded: dict[str, Any] = json.loads(source.read_text(encoding="utf-8"))
     return loaded
 

@@ -6,10 +6,10 @@ from collections.abc import Sequence
 
 from analysis_core.effects.deflection_limits import SpanDeflection
 from analysis_core.effects.faces import SupportMoment
-from analysis_core.line_details import Redistributed
 from analysis_core.results import Extreme, LineEnvelope
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.table import table
+from analysis_core.solving.line_details import Redistributed
 from analysis_core.units import DisplayUnits
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from analysis_core.record_rows import RecordTable
+from analysis_core.report.record_rows import RecordTable
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.table import table, table_row
 

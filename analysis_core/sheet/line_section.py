@@ -6,6 +6,7 @@ import math
 from collections.abc import Mapping
 
 from analysis_core.model import Line, Member
+from analysis_core.report.tables import support_text
 from analysis_core.results import LineEnvelope, LineResult
 from analysis_core.sheet.anchors import anchor
 from analysis_core.sheet.diagrams import DEFLECTION, MOMENT, SHEAR, diagram
@@ -13,7 +14,6 @@ from analysis_core.sheet.elevation import actions_drawing, elevation
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.strip import Strip, strip
 from analysis_core.sheet.table import table
-from analysis_core.tables import support_text
 from analysis_core.units import DisplayUnits
 
 

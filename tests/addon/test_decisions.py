@@ -5,9 +5,9 @@ from dataclasses import replace
 import demo
 import pytest
 
-from analysis_core import job
 from analysis_core.errors import JobError
-from analysis_core.job_edit import entries
+from analysis_core.job import reader as job
+from analysis_core.job.edit import entries
 from analysis_core.units import display_units
 from freecad.spanledger.opened_model import OpenedModel, job_beside
 from freecad.spanledger.present import decisions

@@ -6,7 +6,7 @@ import demo
 import pytest
 
 from analysis_core.findings import Finding
-from analysis_core.posted_states import PostedState
+from analysis_core.revision.posted_states import PostedState
 from analysis_core.units import display_units
 from freecad.spanledger.present.findings import counts_words, finding_rows, matching
 from freecad.spanledger.present.listing import GLYPHS, STATES, grouped, rows_of

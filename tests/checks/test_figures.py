@@ -4,7 +4,7 @@ import json
 
 import pytest
 
-from analysis_core.checking import FIGURES, TITLES
+from analysis_core.checking.members import FIGURES, TITLES
 from analysis_core.cli import main
 
 

@@ -6,9 +6,9 @@ import pytest
 from designs import C24, C30, IPE300, S355, rectangle
 
 from analysis_core import pipeline
-from analysis_core.check_inputs import by_duration
-from analysis_core.check_restraints import continuous_ends, stretch_of
-from analysis_core.checking import check_lines
+from analysis_core.checking.inputs import by_duration
+from analysis_core.checking.members import check_lines
+from analysis_core.checking.restraints import continuous_ends, stretch_of
 from analysis_core.effects.deflection_limits import spans_of
 from analysis_core.model import (
     Case,

@@ -7,7 +7,6 @@ import pytest
 from small_solver import FIXED, PIN, beam_line, solve, uniform
 
 from analysis_core import rules
-from analysis_core.csv_text import csv_text
 from analysis_core.effects.arrangements import Arrangements, merged, split_by_span, whole_cases
 from analysis_core.effects.deflection_limits import DeflectionLimit, span_deflections, spans_of
 from analysis_core.effects.envelopes import envelope
@@ -20,6 +19,7 @@ from analysis_core.effects.live_load_reduction import (
 from analysis_core.effects.reactions import governing, schedule, schedule_table, unfactored
 from analysis_core.effects.stations import stations
 from analysis_core.model import Combination, JointMovement, Support
+from analysis_core.report.csv_text import csv_text
 from analysis_core.results import LineResult
 from analysis_core.units import display_units
 

@@ -14,7 +14,7 @@ from scipy.integrate import quad
 from analysis_core import pipeline
 from analysis_core.ifc.analysis_model.bars import bars_of
 from analysis_core.ifc.posting import writer
-from analysis_core.job import load
+from analysis_core.job.reader import load
 from analysis_core.model import DistributedForce, ImposedCurvature, Piece, Support
 from analysis_core.settings import Analysis, Settings
 

@@ -8,7 +8,7 @@ from update_makers import SAMPLES, named, sample, size
 
 from analysis_core.cli import main
 from analysis_core.errors import JobError
-from analysis_core.job import load, parse
+from analysis_core.job.reader import load, parse
 from analysis_core.settings import TableSection
 
 JOB = SAMPLES / "quarry_lane.yaml"

@@ -16,7 +16,7 @@ from update_makers import (
 
 from analysis_core import pipeline
 from analysis_core.errors import JobError
-from analysis_core.job import parse
+from analysis_core.job.reader import parse
 
 # The validator leaves its own rule files to the garbage collector.
 pytestmark = pytest.mark.filterwarnings(

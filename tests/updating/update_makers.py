@@ -7,7 +7,7 @@ import ifcopenshell.geom
 import ifcopenshell.guid
 import ifcopenshell.validate
 
-from analysis_core.job import parse
+from analysis_core.job.reader import parse
 
 SAMPLES = Path(__file__).resolve().parents[2] / "sample_models"
 SCHEMAS = ("ifc2x3", "ifc4", "ifc4x3")

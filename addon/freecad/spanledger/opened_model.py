@@ -12,21 +12,21 @@ from functools import lru_cache
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from analysis_core import job
 from analysis_core.errors import JobError
+from analysis_core.job import reader as job
 from analysis_core.results import Outcome
 from analysis_core.settings import Settings
 from analysis_core.units import DisplayUnits, display_units
 
 if TYPE_CHECKING:
-    from analysis_core.checking import MemberChecks
+    from analysis_core.checking.members import MemberChecks
     from analysis_core.ifc.shapes import BuildingShape
     from analysis_core.pipeline import Reading
-    from analysis_core.posted_states import PostedState
-    from analysis_core.revision import Reconciliation
+    from analysis_core.revision.posted_states import PostedState
+    from analysis_core.revision.reconcile import Reconciliation
 
     Checks = tuple[MemberChecks, ...]
-    from analysis_core.solving import Memory
+    from analysis_core.solving.lines import Memory
 
 
 @dataclass(slots=True)
@@ -130,7 +130,7 @@ class OpenedModel:
         Raises IfcReadError, JobError, and whatever ``progress`` raises.
         """
         from analysis_core import pipeline
-        from analysis_core.solving import Memory
+        from analysis_core.solving.lines import Memory
 
         stamp = _stamp(self.path)
         reading = self.reading
@@ -150,7 +150,7 @@ class OpenedModel:
 
         May be called in another thread; raises JobError, and whatever ``progress`` raises.
         """
-        from analysis_core.checking import check_line
+        from analysis_core.checking.members import check_line
 
         found: dict[str, Checks] = {}
         known, said = self._checked, _said_of_checks(settings)

@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from typing import Any, get_args
 
-from analysis_core.checking import MemberChecks
+from analysis_core.checking.members import MemberChecks
 from analysis_core.model import RIGID, Action, Nature
 from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings

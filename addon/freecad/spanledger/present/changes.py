@@ -5,8 +5,8 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from analysis_core.revision import LineChange, Reconciliation
-from analysis_core.tables import safe
+from analysis_core.report.tables import safe
+from analysis_core.revision.reconcile import LineChange, Reconciliation
 from analysis_core.units import DisplayUnits
 
 from .words import noop, say

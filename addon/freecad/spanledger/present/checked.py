@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
-from analysis_core.checking import MemberChecks
-from analysis_core.line_details import detail_of
+from analysis_core.checking.members import MemberChecks
+from analysis_core.report.tables import safe
 from analysis_core.results import LineResult
-from analysis_core.tables import safe
+from analysis_core.solving.line_details import detail_of
 from analysis_core.units import DisplayUnits
 
 from .words import say

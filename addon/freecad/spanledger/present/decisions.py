@@ -11,7 +11,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from analysis_core.errors import JobError
-from analysis_core.job_edit import (
+from analysis_core.job.edit import (
     entries,
     stated,
     with_entry,

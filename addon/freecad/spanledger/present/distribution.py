@@ -11,7 +11,7 @@ from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.effects.combinations import combine_line
 from analysis_core.errors import AnalysisError
 from analysis_core.model import Combination
-from analysis_core.record_rows import RecordRow, RecordTable, closing_note, record_tables
+from analysis_core.report.record_rows import RecordRow, RecordTable, closing_note, record_tables
 from analysis_core.results import LineResult
 from analysis_core.units import DisplayUnits
 

@@ -5,8 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from analysis_core.findings import Finding
+from analysis_core.report.tables import safe
 from analysis_core.results import Outcome
-from analysis_core.tables import safe
 
 from .words import noop, say
 

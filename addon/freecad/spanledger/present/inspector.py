@@ -5,8 +5,8 @@ from __future__ import annotations
 import math
 
 from analysis_core.model import FREE, RIGID, Support
+from analysis_core.report.tables import safe
 from analysis_core.results import LineResult, Outcome
-from analysis_core.tables import safe
 from analysis_core.units import DisplayUnits
 
 from .decisions import CONDITIONS

@@ -6,8 +6,8 @@ from collections.abc import Collection, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Literal
 
-from analysis_core.posted_states import PostedState
 from analysis_core.results import LineResult, Outcome
+from analysis_core.revision.posted_states import PostedState
 from analysis_core.units import DisplayUnits
 
 from .words import noop, say

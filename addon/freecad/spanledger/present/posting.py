@@ -8,8 +8,8 @@ from dataclasses import dataclass
 from analysis_core.ifc.posting.governing import ElementEffects, element_effects, element_parts
 from analysis_core.ifc.posting.support_reactions import SupportReactions, support_reactions
 from analysis_core.ifc.posting.writer import PostReport
+from analysis_core.report.tables import safe
 from analysis_core.results import Outcome
-from analysis_core.tables import safe
 from analysis_core.units import DisplayUnits
 
 from .words import say

@@ -12,13 +12,13 @@ from dataclasses import dataclass, field, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.line_details import detail_of
 from analysis_core.model import (
     Joint,
     Line,
     Member,
 )
 from analysis_core.results import Extreme, LineEnvelope, LineResult
+from analysis_core.solving.line_details import detail_of
 from analysis_core.units import DisplayUnits
 
 from .diagrams import Quantity, View, line_ordinates, view_envelopes
@@ -121,7 +121,7 @@ def joint_places(strip: Strip) -> list[tuple[float, Joint]]:
 
 def joint_words(joint: Joint, units: DisplayUnits) -> str:
     """Return what holds a joint and why, for a tooltip."""
-    from analysis_core.tables import safe, support_text
+    from analysis_core.report.tables import safe, support_text
 
     held = support_text(joint.support, units)
     parts = [say("Joint {number}: {held}", number=joint.id, held=say(held))]
@@ -136,7 +136,7 @@ def joint_words(joint: Joint, units: DisplayUnits) -> str:
 
 def member_words(member: Member, units: DisplayUnits) -> str:
     """Return a member in words, for a tooltip."""
-    from analysis_core.tables import safe
+    from analysis_core.report.tables import safe
 
     length = units.text(member.length, "length")
     if member.role == "span":

@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.check_restraints import (
+from analysis_core.checking.restraints import (
     Stretch,
     continuous_ends,
     restraints,
@@ -24,10 +24,10 @@ from analysis_core.effects.deflection_limits import (
 )
 from analysis_core.effects.envelopes import envelope
 from analysis_core.effects.states import State, governing_states, state_stations
-from analysis_core.line_details import DetailInput, detail_of
 from analysis_core.model import Combination, Line, LineModel, Member, Transfer
 from analysis_core.results import LineEnvelope, LineResult, Stations
 from analysis_core.settings import Settings
+from analysis_core.solving.line_details import DetailInput, detail_of
 
 Floats = NDArray[np.float64]
 

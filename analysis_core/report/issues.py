@@ -16,7 +16,7 @@ from dataclasses import dataclass
 from datetime import UTC, datetime
 from xml.etree import ElementTree as Xml
 
-from analysis_core.checking import MemberChecks
+from analysis_core.checking.members import MemberChecks
 from analysis_core.findings import Finding
 from analysis_core.model import Line, Point
 from analysis_core.results import Outcome

@@ -26,14 +26,14 @@ from analysis_core.effects.combinations import combine
 from analysis_core.effects.envelopes import envelopes
 from analysis_core.errors import AnalysisError, MechanismError
 from analysis_core.findings import Finding
-from analysis_core.fingerprints import fingerprint
-from analysis_core.line_details import DetailInput, LineDetail, detail_of, line_detail
-from analysis_core.line_fingerprints import line_bases
 from analysis_core.load_levels import levels
 from analysis_core.model import Action, Combination, Line, LineModel, PointForce, Transfer
 from analysis_core.results import LineEnvelope, LineResult, LineSolution, Verification
+from analysis_core.revision.fingerprints import fingerprint
+from analysis_core.revision.line_fingerprints import line_bases
 from analysis_core.rules import RuleSet
 from analysis_core.settings import Settings
+from analysis_core.solving.line_details import DetailInput, LineDetail, detail_of, line_detail
 
 Progress = Callable[[str, float], None]
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 import math
 from typing import Any
 
-from analysis_core.csv_text import csv_text
-from analysis_core.revision import Governing, LineChange, Reconciliation
-from analysis_core.tables import CAUTION, findings_text, safe, table
+from analysis_core.report.csv_text import csv_text
+from analysis_core.report.tables import CAUTION, findings_text, safe, table
+from analysis_core.revision.reconcile import Governing, LineChange, Reconciliation
 from analysis_core.units import DisplayUnits
 
 _EFFECTS = {

@@ -14,9 +14,9 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from analysis_core.errors import JobError
-from analysis_core.fingerprints import RECEIVES, differences
 from analysis_core.model import Line, Point
 from analysis_core.results import LineResult, Outcome
+from analysis_core.revision.fingerprints import RECEIVES, differences
 
 SAME_PLACE = 0.05
 """Ends of an element closer than this (m) are at the same place."""

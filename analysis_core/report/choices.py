@@ -6,8 +6,8 @@ import math
 from collections.abc import Sequence
 from typing import Any
 
-from analysis_core.choosing import Choice, Effect
-from analysis_core.tables import safe, table
+from analysis_core.checking.choosing import Choice, Effect
+from analysis_core.report.tables import safe, table
 from analysis_core.units import DisplayUnits
 
 

@@ -6,10 +6,10 @@ import math
 from collections.abc import Mapping
 from typing import Any
 
-from analysis_core.checking import FIGURES, TITLES, MemberChecks
+from analysis_core.checking.members import FIGURES, TITLES, MemberChecks
 from analysis_core.checks.working import Check
+from analysis_core.report.tables import safe, table
 from analysis_core.results import Outcome
-from analysis_core.tables import safe, table
 from analysis_core.units import DisplayUnits
 
 ByLine = Mapping[str, tuple[MemberChecks, ...]]

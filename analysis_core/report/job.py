@@ -11,7 +11,7 @@ import math
 from collections.abc import Iterator
 
 from analysis_core.model import Joint, Line, LineModel, Material, Member, Support
-from analysis_core.tables import safe
+from analysis_core.report.tables import safe
 
 _CONDITIONS = {
     (math.inf, 0.0): "pinned",

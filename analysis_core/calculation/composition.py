@@ -5,14 +5,13 @@ from __future__ import annotations
 from collections.abc import Hashable, Sequence
 from dataclasses import replace
 
-from analysis_core.assumptions import assumptions_part
-from analysis_core.checking import DEFLECTION_LIMIT, MemberChecks, check_line
+from analysis_core.calculation.assumptions import assumptions_part
+from analysis_core.calculation.fixed_end_rows import fixed_end_rows
+from analysis_core.checking.members import DEFLECTION_LIMIT, MemberChecks, check_line
 from analysis_core.distribution.record import distribute
 from analysis_core.effects.states import State, state_line
 from analysis_core.errors import AnalysisError
-from analysis_core.fixed_end_rows import fixed_end_rows
-from analysis_core.line_details import detail_of
-from analysis_core.record_rows import RecordTable, closing_note, record_tables
+from analysis_core.report.record_rows import RecordTable, closing_note, record_tables
 from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
 from analysis_core.sheet.anchors import anchor
@@ -22,6 +21,7 @@ from analysis_core.sheet.distribution import distribution, fixed_ends
 from analysis_core.sheet.document import sheet
 from analysis_core.sheet.html import Markup, tag
 from analysis_core.sheet.line_section import member_name
+from analysis_core.solving.line_details import detail_of
 from analysis_core.units import DisplayUnits
 
 _FACTORS_ABOVE = "Stiffness, distribution and carry-over factors as in the first table."

@@ -11,10 +11,10 @@ from typing import Any, cast
 
 from analysis_core.effects.stations import stations as stations_of
 from analysis_core.findings import Finding
-from analysis_core.line_details import LineDetail, detail_of
 from analysis_core.model import Case, Combination, Joint, Line, Member, Support
 from analysis_core.results import Extreme, LineEnvelope, LineResult, LineSolution, Outcome
-from analysis_core.stacks import Received
+from analysis_core.solving.line_details import LineDetail, detail_of
+from analysis_core.solving.stacks import Received
 
 FORMAT = "spanledger-results"
 VERSION = 1

@@ -5,15 +5,15 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
-from analysis_core.check_inputs import designs, line_fields, timber_fields, timber_sags
+from analysis_core.checking.inputs import designs, line_fields, timber_fields, timber_sags
 from analysis_core.checks import concrete_aci, concrete_en, steel_aisc, steel_en, timber_en
 from analysis_core.checks.design import MemberDesign
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 from analysis_core.errors import JobError
-from analysis_core.line_details import detail_of
 from analysis_core.model import LineModel, Member
 from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
+from analysis_core.solving.line_details import detail_of
 
 FIGURES: Mapping[str, Mapping[str, Figure]] = {
     "en-1993-1-1": steel_en.FIGURES,

@@ -13,14 +13,14 @@ from collections.abc import Callable, Iterable, Mapping, Sequence
 from typing import TYPE_CHECKING, cast
 
 from analysis_core.findings import Finding, Severity
-from analysis_core.line_details import Redistributed, detail_of
 from analysis_core.model import Joint, Line, LineModel, Member, Support
 from analysis_core.results import Extreme, LineResult, MemberEnvelope, Outcome
-from analysis_core.stacks import Received
+from analysis_core.solving.line_details import Redistributed, detail_of
+from analysis_core.solving.stacks import Received
 from analysis_core.units import DisplayUnits
 
 if TYPE_CHECKING:
-    from analysis_core.posted_states import PostedState
+    from analysis_core.revision.posted_states import PostedState
 
 CAUTION = (
     "Caution: computed from the model as idealised. Local codes govern; a licensed engineer must "

@@ -8,9 +8,9 @@ from dataclasses import dataclass
 
 from analysis_core.checks.design import Restraints
 from analysis_core.effects.deflection_limits import Span
-from analysis_core.line_selection import chooses
 from analysis_core.model import Line, LineModel, Member, Transfer
 from analysis_core.settings import RestraintSetting, Settings
+from analysis_core.solving.line_selection import chooses
 
 _STRAIGHT = 1e-3  # sine of the angle up to which members run straight on
 

@@ -8,7 +8,7 @@ from analysis_core import rules as rule_sets
 from analysis_core.findings import Finding
 from analysis_core.model import Combination, LineModel
 from analysis_core.settings import Settings
-from analysis_core.solving import Rules
+from analysis_core.solving.lines import Rules
 
 _NO_CASES = (
     "The model states no load case and self weight is off, so there is nothing to combine. State "

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
-from analysis_core.fingerprints import basis, fingerprint
 from analysis_core.load_levels import levels
 from analysis_core.model import Combination, LineModel, Transfer
+from analysis_core.revision.fingerprints import basis, fingerprint
 from analysis_core.settings import Settings
 
 

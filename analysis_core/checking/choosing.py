@@ -10,7 +10,7 @@ import math
 from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
-from analysis_core.checking import MemberChecks, check_lines
+from analysis_core.checking.members import MemberChecks, check_lines
 from analysis_core.errors import JobError
 from analysis_core.idealise.self_weight import CASE_NAME
 from analysis_core.load_levels import levels

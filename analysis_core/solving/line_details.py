@@ -19,11 +19,11 @@ from analysis_core.effects.redistribution_limits import Limit
 from analysis_core.effects.redistribution_plan import Plan, plan_redistribution
 from analysis_core.effects.states import State, governing_states
 from analysis_core.errors import ModelError
-from analysis_core.line_selection import chooses
 from analysis_core.model import Combination, LineModel
 from analysis_core.results import LineEnvelope, LineResult, LineSolution
 from analysis_core.rules import RuleSet
 from analysis_core.settings import Limits, Settings
+from analysis_core.solving.line_selection import chooses
 
 
 @dataclass(frozen=True, slots=True)

@@ -18,8 +18,8 @@ from typing import Any
 import yaml
 
 from analysis_core.errors import JobError
-from analysis_core.job_check import Position, check
-from analysis_core.job_sections import csv_rows, table_sections
+from analysis_core.job.check import Position, check
+from analysis_core.job.sections import csv_rows, table_sections
 from analysis_core.settings import (
     ActionSetting,
     Analysis,
@@ -138,7 +138,7 @@ def read_yaml(text: str) -> Any:
 
 def schema() -> dict[str, Any]:
     """Return the JSON schema of the job file."""
-    source = resources.files("analysis_core").joinpath("job_schema.json")
+    source = resources.files("analysis_core.job").joinpath("job_schema.json")
     loaded: dict[str, Any] = json.loads(source.read_text(encoding="utf-8"))
     return loaded
 

@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterable
 
 from analysis_core.distribution.record import DistributionRecord
-from analysis_core.record_rows import RecordTable, closing_note, record_tables
-from analysis_core.tables import safe, table
+from analysis_core.report.record_rows import RecordTable, closing_note, record_tables
+from analysis_core.report.tables import safe, table
 from analysis_core.units import DisplayUnits
 
 

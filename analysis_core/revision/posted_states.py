@@ -10,9 +10,9 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Literal
 
-from analysis_core.fingerprints import differences, fingerprint
 from analysis_core.ifc.posting.posted import Posted
 from analysis_core.model import Line, LineModel
+from analysis_core.revision.fingerprints import differences, fingerprint
 
 State = Literal["current", "stale", "not posted"]
 Entries = Mapping[str, Sequence[Posted]]

@@ -1,0 +1,1 @@
+"""What the calculation sheet holds: gathered here, laid out by ``sheet``."""

@@ -1,0 +1,1 @@
+"""Members through the checks, and the lightest section that passes them."""

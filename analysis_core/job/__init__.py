@@ -1,0 +1,1 @@
+"""The job file: read safely, checked, changed as text."""

@@ -1,0 +1,1 @@
+"""What a person or a program reads: tables, results file, sheet contents, issues."""

@@ -1,0 +1,1 @@
+"""Lines through the solver along the load path, and what follows from it for each line."""
