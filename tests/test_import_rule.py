@@ -78,7 +78,7 @@ def test_the_add_on_leaves_files_and_rules_to_the_core():
         ("sheet/page.py", "from importlib import import_module\nimport_module('ifcopenshell')"),
         ("model.py", "from analysis_core.pipeline import run"),
         ("settings.py", "from analysis_core.model import Line"),
-        ("pipeline.py", "import ifcopenshell.util.element"),
+        ("pipeline/reading.py", "import ifcopenshell.util.element"),
         ("pipeline.py", "import yaml"),
         ("idealise/lines.py", "import ifcopenshell"),
         ("ifc/view.py", "import FreeCAD"),
