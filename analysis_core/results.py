@@ -136,8 +136,7 @@ class Verification:
 class LineResult:
     """One line with everything that was found out about it.
 
-    ``solution`` holds the cases; ``combined`` the same arrays for combinations (its ``cases``
-    are combination names), both None where the line was not analysed.  ``envelopes`` by limit
+    ``solution`` holds the cases, None where the line was not analysed.  ``envelopes`` by limit
     state.
     """
 
@@ -145,7 +144,8 @@ class LineResult:
     status: str
     """"balanced" or "not analysed"."""
     solution: LineSolution | None = None
-    combined: LineSolution | None = None
+    combine: Callable[[], LineSolution] | None = None
+    """Gives ``combined``, on request."""
     envelopes: Mapping[str, LineEnvelope] = field(default_factory=dict)
     verification: Verification | None = None
     parts: LineSolution | None = None
@@ -156,6 +156,11 @@ class LineResult:
     """Of all that the results depend on; see ``fingerprints``."""
     basis: Mapping[str, str] = field(default_factory=dict)
     """What the fingerprint was taken of, in short texts by subject."""
+
+    @property
+    def combined(self) -> LineSolution | None:
+        """The arrays of ``solution`` for combinations: its ``cases`` are their names."""
+        return None if self.combine is None else self.combine()
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,5 +1,7 @@
 """Fingerprints: the same whenever results must be the same, and reasons when they are not."""
 
+import hashlib
+import json
 from dataclasses import replace
 
 import pytest
@@ -7,11 +9,16 @@ import pytest
 from analysis_core.model import (
     Combination,
     DistributedForce,
+    ImposedCurvature,
     Joint,
+    JointForce,
+    JointMovement,
     Line,
     Material,
     Member,
     Piece,
+    PointForce,
+    PointMoment,
     Section,
     Support,
 )
@@ -105,3 +112,31 @@ def test_a_new_action_and_another_support_are_named(line):
 
     assert actions == "actions of G changed, 1 before and 2 now"
     assert support == "support at joint 0 changed from rigid/free/free to rigid/free/rigid"
+
+
+@pytest.mark.parametrize(
+    ("action", "row"),
+    [
+        (
+            DistributedForce("G", 1, 0.5, 4.5, (8e3, -1.25), (), "source"),
+            ["DistributedForce", "1", "0.5", "4.5", ["8000", "-1.25"], []],
+        ),
+        (
+            PointForce("G", 0, 1.0 / 3.0, 5e3, -2e-7),
+            ["PointForce", "0", "0.333333333", "5000", "-2e-07"],
+        ),
+        (PointMoment("G", 1, 2.0, 12e3), ["PointMoment", "1", "2", "12000"]),
+        (
+            ImposedCurvature("G", 1, 0.0, 4.5, 1.5e-4),
+            ["ImposedCurvature", "1", "0", "4.5", "0.00015"],
+        ),
+        (JointForce("G", 2, 1e3, -2e3, 0.0), ["JointForce", 2, "1000", "-2000", "0"]),
+        (JointMovement("G", 1, vertical=8e-3), ["JointMovement", 1, "0", "0.008", "0"]),
+    ],
+)
+def test_actions_are_hashed_in_the_form_that_posted_files_hold(line, action, row):
+    # Files keep fingerprints: the same content must give the same hash in every later version.
+    text = of(replace(line, actions=(action,)))["actions G"]
+
+    digest = hashlib.sha256(json.dumps([json.dumps(row)]).encode()).hexdigest()[:10]
+    assert text == f"1 #{digest}"

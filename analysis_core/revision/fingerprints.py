@@ -14,19 +14,30 @@ import hashlib
 import json
 import math
 import re
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import fields
+from operator import attrgetter
+from typing import Any, get_args
 
 from analysis_core.model import (
     Action,
     Combination,
+    JointAction,
     JointForce,
     JointMovement,
     Line,
+    Material,
     Member,
+    MemberAction,
     Support,
 )
 from analysis_core.settings import Settings
+
+# What the results depend on of each kind of action: neither its case nor where it came from.
+_VALUES: Mapping[type[Action], Callable[[Action], tuple[Any, ...]]] = {
+    kind: attrgetter(*(f.name for f in fields(kind) if f.name not in ("case", "source")))
+    for kind in get_args(MemberAction | JointAction)
+}
 
 RECEIVES = "whose reactions it receives"
 _DIGEST = re.compile(r" ?#[0-9a-f]{10}\b")
@@ -58,26 +69,59 @@ def basis(
 
     ``received``: fingerprint by mark of the lines whose reactions act on this one.
     """
-    texts = {"geometry": _geometry(line)}
-    for member in line.members:
-        key = member.element or str(member.id)
-        _join(texts, f"section {key}", _section(member))
-        _join(texts, f"material {key}", _material(member))
-    for joint in line.joints:
-        if joint.support is not None:
-            texts[f"support {joint.id}"] = _support(joint.support)
-    for case in sorted({action.case for action in line.actions}):
-        texts[f"actions {case}"] = _actions([a for a in line.actions if a.case == case])
-    texts["combinations"] = _digest(
-        [[c.name, c.limit_state, sorted(c.factors.items())] for c in combinations]
-    )
-    texts["rules"] = rules
-    texts["settings"] = _digest(
-        [repr(settings.rules), repr(settings.analysis), repr(settings.limits)]
-    )
-    for mark, print_ in received.items():
-        texts[f"received {mark}"] = print_
-    return texts
+    return Bases(combinations=combinations, rules=rules, settings=settings).of(line, received)
+
+
+class Bases:
+    """Writes the bases of many lines; what several of them share is put into words once."""
+
+    def __init__(
+        self, *, combinations: Sequence[Combination], rules: str, settings: Settings
+    ) -> None:
+        self._common = {
+            "combinations": _digest(
+                [[c.name, c.limit_state, sorted(c.factors.items())] for c in combinations]
+            ),
+            "rules": rules,
+            "settings": _digest(
+                [repr(settings.rules), repr(settings.analysis), repr(settings.limits)]
+            ),
+        }
+        self._sections: dict[Hashable, str] = {}
+        self._materials: dict[Material | None, str] = {}
+
+    def of(self, line: Line, received: Mapping[str, str]) -> dict[str, str]:
+        """Return the basis of one line; see ``basis``."""
+        texts = {"geometry": _geometry(line)}
+        for member in line.members:
+            key = member.element or str(member.id)
+            _join(texts, f"section {key}", self._section(member))
+            _join(texts, f"material {key}", self._material(member.material))
+        for joint in line.joints:
+            if joint.support is not None:
+                texts[f"support {joint.id}"] = _support(joint.support)
+        by_case: dict[str, list[Action]] = {}
+        for action in line.actions:
+            by_case.setdefault(action.case, []).append(action)
+        for case in sorted(by_case):
+            texts[f"actions {case}"] = _actions(by_case[case])
+        texts |= self._common
+        for mark, print_ in received.items():
+            texts[f"received {mark}"] = print_
+        return texts
+
+    def _section(self, member: Member) -> str:
+        key = member.pieces, member.section
+        text = self._sections.get(key)
+        if text is None:
+            text = self._sections[key] = _section(member)
+        return text
+
+    def _material(self, material: Material | None) -> str:
+        text = self._materials.get(material)
+        if text is None:
+            text = self._materials[material] = _material(material)
+        return text
 
 
 def differences(
@@ -156,10 +200,10 @@ def _section(member: Member) -> str:
     return f"{section.name}{size} #{_digest([pieces, _nine(section.area)])}"
 
 
-def _material(member: Member) -> str:
-    if member.material is None:
+def _material(material: Material | None) -> str:
+    if material is None:
         return "not stated"
-    m = member.material
+    m = material
     strength = sorted((k, _nine(v)) for k, v in m.strength)
     return f"{m.name} #{_digest([_nine(m.elastic_modulus), _nine(m.density), strength])}"
 
@@ -171,23 +215,23 @@ def _support(support: Support) -> str:
 
 def _actions(actions: Sequence[Action]) -> str:
     """Count and digest; the order and the origin of the actions do not matter."""
-    rows = sorted(json.dumps(_action(action)) for action in actions)
+    rows = sorted(map(_action, actions))
     return f"{len(rows)} #{_digest(rows)}"
 
 
-def _action(action: Action) -> list[object]:
-    row: list[object] = [type(action).__name__]
-    for field in fields(action):
-        value = getattr(action, field.name)
-        if field.name in ("source", "case"):
-            continue
-        if isinstance(value, tuple):
-            row.append([_nine(v) for v in value])
-        elif isinstance(action, JointForce | JointMovement) and field.name == "joint":
-            row.append(value)
-        else:
-            row.append(_nine(value))
-    return row
+def _action(action: Action) -> str:
+    """Kind and values as a JSON list, put together by hand: there are very many of them."""
+    kind = type(action)
+    values = [_value(value) for value in _VALUES[kind](action)]
+    if isinstance(action, JointForce | JointMovement):
+        values[0] = str(action.joint)
+    return f'["{kind.__name__}", {", ".join(values)}]'
+
+
+def _value(value: float | tuple[float, ...]) -> str:
+    if isinstance(value, tuple):
+        return f"[{', '.join(map(_value, value))}]"
+    return f'"{_nine(value)}"'
 
 
 def _join(texts: dict[str, str], key: str, text: str) -> None:

@@ -3,11 +3,20 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 
 from analysis_core.load_levels import levels
 from analysis_core.model import Combination, LineModel, Transfer
-from analysis_core.revision.fingerprints import basis, fingerprint
+from analysis_core.revision.fingerprints import Bases, fingerprint
 from analysis_core.settings import Settings
+
+
+@dataclass(frozen=True, slots=True)
+class Fingerprint:
+    """The fingerprint of a line and the basis that it is the hash of."""
+
+    text: str
+    basis: dict[str, str]
 
 
 def line_bases(
@@ -17,7 +26,19 @@ def line_bases(
     rules: str,
     settings: Settings,
 ) -> dict[str, dict[str, str]]:
-    """Return the basis of each line by its mark: see ``fingerprints.basis``.
+    """Return the basis of each line by its mark: see ``fingerprints.basis``."""
+    found = line_fingerprints(model, combinations=combinations, rules=rules, settings=settings)
+    return {mark: each.basis for mark, each in found.items()}
+
+
+def line_fingerprints(
+    model: LineModel,
+    *,
+    combinations: Sequence[Combination],
+    rules: str,
+    settings: Settings,
+) -> dict[str, Fingerprint]:
+    """Return the fingerprint of each line by its mark, with the basis it was taken of.
 
     In the order of the load path, since a basis holds the fingerprints of what bears on the line.
     Lines of a circle hold the fingerprints that the others have without the circle.
@@ -26,25 +47,21 @@ def line_bases(
     into: dict[str, list[Transfer]] = {}
     for transfer in model.transfers:
         into.setdefault(transfer.to_line, []).append(transfer)
+    bases = Bases(combinations=combinations, rules=rules, settings=settings)
     prints: dict[str, str] = {}
 
-    def of(mark: str) -> dict[str, str]:
-        return basis(
-            lines[mark],
-            combinations=combinations,
-            rules=rules,
-            settings=settings,
-            received=_received(into.get(mark, ()), prints),
-        )
+    def of(mark: str) -> Fingerprint:
+        basis = bases.of(lines[mark], _received(into.get(mark, ()), prints))
+        return Fingerprint(fingerprint(basis), basis)
 
-    found: dict[str, dict[str, str]] = {}
+    found: dict[str, Fingerprint] = {}
     for level in levels([*lines], model.transfers):
         for group in level:
             if len(group) > 1:
-                prints.update({mark: fingerprint(of(mark)) for mark in group})
+                prints.update({mark: of(mark).text for mark in group})
             mine = {mark: of(mark) for mark in group}
             found.update(mine)
-            prints.update({mark: fingerprint(texts) for mark, texts in mine.items()})
+            prints.update({mark: each.text for mark, each in mine.items()})
     return found
 
 

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
-from functools import cache
+from functools import cache, partial
 
 import numpy as np
 
@@ -29,11 +29,10 @@ from analysis_core.findings import Finding
 from analysis_core.load_levels import levels
 from analysis_core.model import Action, Combination, Line, LineModel, PointForce, Transfer
 from analysis_core.results import LineEnvelope, LineResult, LineSolution, Verification
-from analysis_core.revision.fingerprints import fingerprint
-from analysis_core.revision.line_fingerprints import line_bases
+from analysis_core.revision.line_fingerprints import line_fingerprints
 from analysis_core.rules import RuleSet
 from analysis_core.settings import Settings
-from analysis_core.solving.line_details import DetailInput, LineDetail, detail_of, line_detail
+from analysis_core.solving.line_details import DetailInput, detail_of, line_detail
 
 Progress = Callable[[str, float], None]
 
@@ -325,40 +324,48 @@ def _results(
     model: LineModel, rules: Rules, settings: Settings, solver: _Solver, tell: Progress
 ) -> tuple[LineResult, ...]:
     solved = [solver.solved[line.mark] for line in model.lines if line.mark in solver.solved]
-    results: dict[str, LineResult] = {}
-    for s, found in zip(solved, _finished(solved, rules, solver, tell), strict=True):
-        results[s.line.mark] = LineResult(
-            line=s.line,
-            status="balanced",
-            solution=s.whole,
-            combined=combine(s.whole, rules.combinations),
-            parts=s.parts,
-            detail=_once(
-                DetailInput(
-                    s.spans,
-                    s.parts,
-                    found.envelopes,
-                    rules.combinations,
-                    rules.arrangements,
-                    rules.rule_set,
-                    model,
-                    settings,
-                )
-            ),
-            envelopes=found.envelopes,
-            verification=Verification(
-                s.whole.joint_residual, s.whole.continuity_residual, found.difference
-            ),
-        )
+    found = _finished(solved, rules, solver, tell)
+    kept = {s.line.mark: (s, each) for s, each in zip(solved, found, strict=True)}
+    prints = line_fingerprints(
+        model, combinations=rules.combinations, rules=rules.name, settings=settings
+    )
+    results = []
     for line in model.lines:
-        results.setdefault(line.mark, LineResult(line, "not analysed"))
-    _add_fingerprints(model, rules, settings, results)
-    return tuple(results[line.mark] for line in model.lines)
+        mine = prints[line.mark]
+        if line.mark in kept:
+            result = _balanced(*kept[line.mark], rules, model, settings)
+        else:
+            result = LineResult(line, "not analysed")
+        results.append(replace(result, fingerprint=mine.text, basis=mine.basis))
+    return tuple(results)
 
 
-def _once(given: DetailInput) -> Callable[[], LineDetail]:
-    """The detail of a line, made when it is first asked for."""
-    return cache(lambda: line_detail(given))
+def _balanced(
+    s: _Solved, found: _Kept, rules: Rules, model: LineModel, settings: Settings
+) -> LineResult:
+    """The result of a line; what few ask for is found out on request, once."""
+    given = DetailInput(
+        s.spans,
+        s.parts,
+        found.envelopes,
+        rules.combinations,
+        rules.arrangements,
+        rules.rule_set,
+        model,
+        settings,
+    )
+    return LineResult(
+        line=s.line,
+        status="balanced",
+        solution=s.whole,
+        combine=cache(partial(combine, s.whole, rules.combinations)),
+        parts=s.parts,
+        detail=cache(partial(line_detail, given)),
+        envelopes=found.envelopes,
+        verification=Verification(
+            s.whole.joint_residual, s.whole.continuity_residual, found.difference
+        ),
+    )
 
 
 def _finished(
@@ -398,11 +405,3 @@ def _finished(
 
 def _rules_key(rules: Rules) -> Hashable:
     return (repr(rules.combinations), repr(rules.arrangements))
-
-
-def _add_fingerprints(
-    model: LineModel, rules: Rules, settings: Settings, results: dict[str, LineResult]
-) -> None:
-    bases = line_bases(model, combinations=rules.combinations, rules=rules.name, settings=settings)
-    for mark, found in bases.items():
-        results[mark] = replace(results[mark], basis=found, fingerprint=fingerprint(found))

@@ -49,7 +49,7 @@ def result_of(line):
     solution = solve(split.line, split.cases)
     found = envelope(split, solution, STRENGTH, limit_state="strength", arrangements=EVERY)
     whole = merged(split, solution, ["G", "Q"], line)
-    return LineResult(line, "balanced", whole, None, {"strength": found})
+    return LineResult(line, "balanced", whole, envelopes={"strength": found})
 
 
 def test_unfactored_reactions_per_support_and_case():
