@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 
 from analysis_core.building import Building
 from analysis_core.errors import IfcWriteError, JobError
+from analysis_core.given_members import Given
 from analysis_core.ifc.updating import Change, Wish
 from analysis_core.model import LineModel
 from analysis_core.report.tables import safe, table
@@ -28,13 +29,15 @@ def wishes(
     *,
     sections: Mapping[str, str],
     materials: Mapping[str, str],
+    given: Given | None = None,
 ) -> list[Wish]:
     """Return what is wanted of which elements; keys are marks of lines or GlobalIds.
 
-    A mark means the spans of the line.  Raises JobError for one that the model does not have, and
+    A mark means the spans of the line.  ``given``: what the job file gives elements, where nothing
+    else is wanted.  Raises JobError for one that the model does not have, and
     where an element is given two sections or materials.
     """
-    if settings.section_table_file and not settings.section_table:
+    if settings.section_table_file and not settings.section_table:  # named but not read
         raise JobError(
             f"The section table '{settings.section_table_file}' of the job file was not read, as "
             f"the job file has no place on the disk yet. Save it first."
@@ -42,7 +45,10 @@ def wishes(
     areas = {m.global_id: m.section.area for m in building.members if m.section is not None}
     densities = {m.global_id: m.material.density for m in building.members if m.material}
     found = []
-    for chosen, kind in ((sections, "profile"), (materials, "material")):
+    more = given or Given({}, {})
+    for chosen, kind, rest in (
+        (sections, "profile", more.profiles), (materials, "material", more.materials),
+    ):  # fmt: skip
         wanted: dict[str, str] = {}
         for target, name in chosen.items():
             for element in _elements(target, model):
@@ -52,11 +58,12 @@ def wishes(
                         f"{model.names.get(element) or element} is given two {what}, "
                         f"'{wanted[element]}' and '{name}'. Give it one."
                     )
+        wanted = {**rest, **wanted}
         # Together, so that a type is changed itself where all its occurrences are.
         for name in dict.fromkeys(wanted.values()):
             elements = tuple(e for e, n in wanted.items() if n == name)
-            given = {kind: name}
-            found.append(Wish(elements, areas=areas, densities=densities, **given))
+            asked = {kind: name}
+            found.append(Wish(elements, areas=areas, densities=densities, **asked))
     return found
 
 

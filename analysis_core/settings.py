@@ -11,6 +11,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Literal
 
+from analysis_core.findings import Finding
+
 Route = Literal["auto", "analytical", "physical"]
 Fixity = Literal["pinned", "fixed", "guided", "free"]
 
@@ -177,6 +179,20 @@ class TableSection:
     name: str
     shape: str
     dimensions: Mapping[str, float]
+    categories: tuple[str, ...] = ()
+    """What kinds of profile it belongs to, to choose among."""
+    origin: str = ""
+    """Name of the profile list that it stands in; "" where the engineer stated it."""
+
+
+@dataclass(frozen=True, slots=True)
+class MemberSetting:
+    """Another section or material for members chosen by ``on``, by name; "" for what they have."""
+
+    on: Selector
+    profile: str = ""
+    material: str = ""
+    source: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -345,7 +361,10 @@ class Settings:
     sections: tuple[SectionSetting, ...] = ()
     section_table: tuple[TableSection, ...] = ()
     section_table_file: str = ""
-    """Where the section table stands, as the job file names it; empty where it is written out."""
+    """A file that the job file names for the section table; empty where there is none."""
+    section_table_findings: tuple[Finding, ...] = ()
+    """What was noticed while the section table was read."""
+    members: tuple[MemberSetting, ...] = ()
     limits: tuple[Limits, ...] = ()
     checks: CheckSettings = field(default_factory=CheckSettings)
     text: str = ""

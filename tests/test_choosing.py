@@ -58,7 +58,7 @@ def test_stiffness_and_self_weight_follow_the_section(model):
 
 
 def test_the_lightest_that_suits_is_chosen_and_everything_lighter_was_tried(table):
-    (choice,) = pipeline.lightest(MODEL, str(table), load(JOB), marks=["ROOF-01"])
+    (choice,), _ = pipeline.lightest(MODEL, str(table), load(JOB), marks=["ROOF-01"])
 
     assert choice.before == "IPE 270"
     assert choice.chosen == choice.tried[-1].name == "IPE 200"
@@ -68,7 +68,7 @@ def test_the_lightest_that_suits_is_chosen_and_everything_lighter_was_tried(tabl
 
 
 def test_what_stands_there_stays_where_nothing_lighter_suits(table):
-    (choice,) = pipeline.lightest(MODEL, str(table), load(JOB), marks=["FF-04"])
+    (choice,), _ = pipeline.lightest(MODEL, str(table), load(JOB), marks=["FF-04"])
 
     assert [t.name for t in choice.tried] == ["IPE 200", "IPE 240", "IPE 300"]
     assert [t.suits for t in choice.tried] == [False, False, True]
@@ -80,7 +80,7 @@ def test_what_stands_there_stays_where_nothing_lighter_suits(table):
 def test_the_lines_that_carry_it_are_told_of_before_anything_is_written(table):
     job = load(JOB)
     weak = replace(job, limits=(replace(job.limits[0], span_ratio=600.0),))
-    (choice,) = pipeline.lightest(MODEL, str(table), weak, marks=["FF-04"])
+    (choice,), _ = pipeline.lightest(MODEL, str(table), weak, marks=["FF-04"])
 
     assert choice.chosen == "IPE 360"
     effects = {e.mark: e for e in choice.effects}
@@ -139,6 +139,6 @@ def test_a_line_that_nothing_suits_is_said_so(tmp_path, capsys):
     small.write_text(TABLE.rsplit("IPE 360", 1)[0], encoding="utf-8")
     job = load(JOB)
     strict = replace(job, limits=(replace(job.limits[0], span_ratio=2000.0),))
-    (choice,) = pipeline.lightest(MODEL, str(small), strict, marks=["FF-04"])
+    (choice,), _ = pipeline.lightest(MODEL, str(small), strict, marks=["FF-04"])
     assert choice.chosen == ""
     assert not any(t.suits for t in choice.tried)

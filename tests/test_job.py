@@ -8,7 +8,8 @@ import pytest
 
 from analysis_core.errors import JobError
 from analysis_core.job.check import check
-from analysis_core.job.reader import load, parse, read_yaml, schema
+from analysis_core.job.reader import load, parse
+from analysis_core.job.yaml_text import read_yaml, schema
 
 WHOLE = """
 title: Quarry Lane Workshops

@@ -11,7 +11,7 @@ from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from analysis_core.checking.members import MemberChecks, check_lines
-from analysis_core.errors import JobError
+from analysis_core.checking.offers import Candidate, made_of
 from analysis_core.idealise.self_weight import CASE_NAME
 from analysis_core.load_levels import levels
 from analysis_core.model import Action, DistributedForce, Line, LineModel, Member, Section
@@ -19,6 +19,7 @@ from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
 
 Solve = Callable[[LineModel], Outcome]
+Progress = Callable[[str, float], None]
 _SAME = 1e-6
 
 
@@ -32,6 +33,10 @@ class Tried:
     governed_by: str
     suits: bool
     reason: str = ""
+    deflection: float | None = None
+    """Largest of the serviceability combinations, m, downward positive."""
+    categories: tuple[str, ...] = ()
+    origin: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,24 +65,36 @@ class Choice:
     effects: tuple[Effect, ...] = ()
     reason: str = ""
     """Why nothing was tried."""
+    left_out: tuple[str, ...] = ()
+    """Names of candidates that are not made of the material of the lines."""
 
 
 def choose_lightest(
     model: LineModel,
     settings: Settings,
-    candidates: Mapping[str, Section],
+    candidates: Sequence[Candidate],
     groups: Sequence[Sequence[str]],
     solve: Solve,
+    *,
+    strict: bool = True,
+    progress: Progress | None = None,
 ) -> list[Choice]:
     """Return the lightest section for each group of lines; what is chosen stays for the next.
 
     ``groups`` hold marks; what bears on others should come first (see ``kinds``).  ``solve``
-    gives the outcome of a model.
+    gives the outcome of a model.  ``strict``: leave out candidates of another material.
     """
     found = []
-    for marks in groups:
-        choice, model = _choose(model, settings, candidates, tuple(marks), solve)
+    for number, marks in enumerate(groups):
+
+        def tell(part: float, done: int = number) -> None:
+            if progress is not None:
+                progress("Choosing", (done + part) / len(groups))
+
+        search = _Search(model, settings, tuple(marks), solve, tell)
+        choice, model = search.choose(candidates, strict=strict)
         found.append(choice)
+        tell(1.0)
     return found
 
 
@@ -115,42 +132,68 @@ def with_section(line: Line, section: Section, weight_sources: Iterable[str]) ->
     return replace(line, members=tuple(members), actions=actions)
 
 
-def _choose(
-    model: LineModel, settings: Settings, candidates: Mapping[str, Section],
-    marks: tuple[str, ...], solve: Solve,
-) -> tuple[Choice, LineModel]:  # fmt: skip
-    lines = [line for line in model.lines if line.mark in marks]
-    spans = [m for line in lines for m in line.members if m.role == "span"]
-    sections = list(dict.fromkeys(m.section.name for m in spans if m.section is not None))
-    before, length = ", ".join(sections), math.fsum(m.length for m in spans)
-    mass = math.fsum(_mass(m) * m.length for m in spans) / length
-    reason = next((r for m in spans if (r := _unfit(m))), "")
-    if reason:
-        return Choice(marks, before, "", mass, mass, length, (), reason=reason), model
-    density = spans[0].material.density if spans[0].material else 0.0
-    present = {m.section.name: m.section for m in spans if m.section is not None}
-    if len(present) == 1:  # what stands there is a candidate too
-        candidates = {**present, **candidates}
-    tried: list[Tried] = []
-    small = _above(model, marks)
-    for name, section in sorted(candidates.items(), key=lambda pair: (pair[1].area, pair[0])):
-        outcome = solve(_changed(small, marks, section))
-        tried.append(_judged(name, section.area * density, outcome, settings, marks))
-        if tried[-1].suits:
-            break
-    if not tried or not tried[-1].suits:
-        return Choice(marks, before, "", mass, mass, length, tuple(tried)), model
-    chosen = tried[-1]
-    if chosen.name in present:
-        return Choice(marks, before, before, mass, mass, length, tuple(tried)), model
-    after = _changed(model, marks, candidates[chosen.name])
-    effects = _effects(solve(model), solve(after), settings, marks)
-    return (
-        Choice(
-            marks, before, chosen.name, mass, chosen.mass, length, tuple(tried), effects
-        ),
-        after,
-    )  # fmt: skip
+class _Search:
+    """The search for lines that get one section in common."""
+
+    def __init__(
+        self, model: LineModel, settings: Settings, marks: tuple[str, ...], solve: Solve,
+        tell: Callable[[float], None],
+    ) -> None:  # fmt: skip
+        self._model, self._settings, self._marks = model, settings, marks
+        self._solve, self._tell = solve, tell
+        lines = [line for line in model.lines if line.mark in marks]
+        self._spans = [m for line in lines for m in line.members if m.role == "span"]
+        self._present = {m.section.name: m.section for m in self._spans if m.section is not None}
+        length = math.fsum(m.length for m in self._spans)
+        mass = math.fsum(_mass(m) * m.length for m in self._spans) / length
+        self._kept = Choice(marks, ", ".join(self._present), "", mass, mass, length, ())
+
+    def choose(self, candidates: Sequence[Candidate], *, strict: bool) -> tuple[Choice, LineModel]:
+        """Return the choice, and the model with it."""
+        reason = next((r for m in self._spans if (r := _unfit(m))), "")
+        if reason:
+            return replace(self._kept, reason=reason), self._model
+        material = self._spans[0].material
+        assert material is not None  # else it would be unfit
+        others: list[Candidate] = []
+        if strict:
+            candidates, others = made_of(candidates, material.category)
+        tried = self._tried(self._in_order(candidates), material.density)
+        kept = replace(self._kept, tried=tried, left_out=tuple(c.name for c in others))
+        if not tried or not tried[-1].suits:
+            return kept, self._model
+        best = tried[-1]
+        if best.name in self._present:
+            return replace(kept, chosen=kept.before), self._model
+        section = next(c.section for c in candidates if c.name == best.name)
+        after = _changed(self._model, self._marks, section)
+        effects = _effects(
+            self._solve(self._model), self._solve(after), self._settings, self._marks
+        )
+        return replace(kept, chosen=best.name, mass_after=best.mass, effects=effects), after
+
+    def _in_order(self, candidates: Iterable[Candidate]) -> list[Candidate]:
+        """The lightest first; what stands there is a candidate too."""
+        known = {c.name: c for c in candidates}
+        if len(self._present) == 1:
+            ((name, section),) = self._present.items()
+            known.setdefault(name, Candidate(name, section))
+        return sorted(known.values(), key=lambda c: (c.section.area, c.name))
+
+    def _tried(self, candidates: Sequence[Candidate], density: float) -> tuple[Tried, ...]:
+        tried: list[Tried] = []
+        small = _above(self._model, self._marks)
+        for number, candidate in enumerate(candidates):
+            self._tell(number / len(candidates))
+            outcome = self._solve(_changed(small, self._marks, candidate.section))
+            found = _judged(
+                candidate.name, candidate.section.area * density, outcome, self._settings,
+                self._marks,
+            )  # fmt: skip
+            tried.append(replace(found, categories=candidate.categories, origin=candidate.origin))
+            if found.suits:
+                break
+        return tuple(tried)
 
 
 def _unfit(member: Member) -> str:
@@ -231,12 +274,24 @@ def _judged(
         for each in found[mark]
         if result.line.members[each.member].role == "span"
     ]
+    deflection = _deflection(results.values())
     for _, each in spans:
         left = next((c for c in each.checks if c.status == "not checked"), None)
         if left is not None:
-            return Tried(name, mass, math.inf, left.name, False, f"not checked: {left.reason}")
+            reason = f"not checked: {left.reason}"
+            return Tried(name, mass, math.inf, left.name, False, reason, deflection)
     use, check = _worst(each for _, each in spans)
-    return Tried(name, mass, use, check, use <= 1.0)
+    return Tried(name, mass, use, check, use <= 1.0, deflection=deflection)
+
+
+def _deflection(results: Iterable[LineResult]) -> float | None:
+    """The largest deflection of the spans, m; None without serviceability combinations."""
+    found: list[float] = []
+    for result in results:
+        envelope = result.envelopes.get("serviceability")
+        for member in envelope.members if envelope is not None else ():
+            found += [member.deflection_down.value, member.deflection_up.value]
+    return max(found, key=abs, default=None)
 
 
 def _worst(checks: Iterable[MemberChecks]) -> tuple[float, str]:
@@ -298,9 +353,3 @@ def _kind(line: Line) -> tuple[str, str] | None:
         if m.role == "span"
     }
     return found.pop() if len(found) == 1 and line.kind == "line" else None
-
-
-def check_candidates(candidates: Mapping[str, Section], where: str) -> None:
-    """Raise JobError where there is nothing to choose from."""
-    if not candidates:
-        raise JobError(f"{where} holds no section to choose from.")

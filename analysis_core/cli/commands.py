@@ -47,6 +47,8 @@ def balance(options: argparse.Namespace) -> int:
     settings = _settings(options)
     if options.lightest:
         return _lightest(options, settings)
+    if options.only:
+        raise JobError("'--only' says which sections '--lightest' chooses from; give both.")
     outcome = pipeline.run(options.model, settings, progress=progress(), only=options.line)
     units = display_units(settings.display.system, settings.display.units)
     text = balance_text(outcome, units)
@@ -74,29 +76,47 @@ def balance(options: argparse.Namespace) -> int:
 
 def _lightest(options: argparse.Namespace, settings: Settings) -> int:
     from analysis_core.report.choices import choices_data, choices_text
+    from analysis_core.report.results_file import finding_data
 
-    choices = pipeline.lightest(
+    choices, told = pipeline.lightest(
         options.model, options.lightest, settings, marks=options.line, alike=options.alike,
-        progress=progress(),
+        only=options.only, progress=progress(),
     )  # fmt: skip
     units = display_units(settings.display.system, settings.display.units)
     head = {"format": "spanledger-choices", "version": 1}
+    file = options.lightest if options.lightest not in ("model", "job") else ""
     put(
         options,
-        lambda: {**head, "choices": choices_data(choices)},
-        choices_text(choices, units),
+        lambda: {
+            **head,
+            "choices": choices_data(choices),
+            "findings": [finding_data(f) for f in told],
+        },
+        choices_text(choices, units, file),
     )
+    if told:
+        print(findings_text(told), file=sys.stderr)
     return OK if all(choice.chosen for choice in choices) else INCOMPLETE
 
 
 def post(options: argparse.Namespace) -> int:
     target = Path(options.model if options.in_place else options.output)
-    if options.remove and (options.section or options.material):
-        raise JobError("'--remove' writes nothing new, so it takes no '--section' or '--material'.")
+    changing = options.section or options.material or options.members
+    if options.remove and changing:
+        raise JobError(
+            "'--remove' writes nothing new, so it takes no '--section', '--material' or "
+            "'--members'."
+        )
     if options.remove:
         return _take_out(options.model, target)
     settings = _settings(options)
-    if options.section or options.material:
+    if options.table and not options.section:
+        raise JobError("'--table' says where a '--section' is found; give both.")
+    if options.table:
+        from analysis_core.job.reader import with_section_tables
+
+        settings = with_section_tables(settings, [Path(options.table)])
+    if changing:
         return _update(options, settings, target)
     found = pipeline.survey(options.model, settings, progress=progress(), only=options.line)
     outcome = pipeline.solve(found, settings, progress=progress())
@@ -113,8 +133,8 @@ def _update(options: argparse.Namespace, settings: Settings, target: Path) -> in
 
     if options.line:
         raise JobError(
-            "'--line' does not go with '--section' and '--material': what bears on a changed "
-            "member changes as well, so all lines are posted. Leave it out."
+            "'--line' does not go with '--section', '--material' and '--members': what bears on a "
+            "changed member changes as well, so all lines are posted. Leave it out."
         )
     done = pipeline.update_members(
         options.model,
@@ -122,6 +142,7 @@ def _update(options: argparse.Namespace, settings: Settings, target: Path) -> in
         settings,
         sections=pairs(options.section, "--section"),
         materials=pairs(options.material, "--material"),
+        given=options.members,
         analysis_model=options.analysis_model,
         progress=progress(),
     )

@@ -80,7 +80,13 @@ def _balance_options(subcommands: Any) -> None:
     command.add_argument(
         "--lightest", metavar="TABLE",
         help="instead: the lightest section that suffices for the chosen lines, or for each kind; "
-        "TABLE is 'model', 'job' (the section table of the job file) or a file with such a table",
+        "TABLE is 'model', 'job' (the section table of the job file) or a file with such a table, "
+        "also a list of profiles as FreeCAD keeps it",
+    )  # fmt: skip
+    command.add_argument(
+        "--only", metavar="PATTERN", action="append", default=[],
+        help="with --lightest: only sections whose name or category fits, 'IPE*' say (may be "
+        "repeated); without, what is not made of the material of a line is left out",
     )  # fmt: skip
     command.add_argument(
         "--alike", action="store_true",
@@ -128,6 +134,14 @@ def _post_options(subcommands: Any) -> None:
     command.add_argument(
         "--material", metavar="TARGET=NAME", action="append", default=[],
         help="the same for a material of the model or the job file (may be repeated)",
+    )  # fmt: skip
+    command.add_argument(
+        "--members", action="store_true",
+        help="first write the sections and materials that the job file gives members (members)",
+    )  # fmt: skip
+    command.add_argument(
+        "--table", metavar="FILE",
+        help="with --section: a section table in place of that of the job file",
     )  # fmt: skip
     command.add_argument(
         "--stations", type=_station_count, default=21, metavar="N", help=argparse.SUPPRESS

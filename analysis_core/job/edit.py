@@ -14,7 +14,7 @@ from typing import Any
 import yaml
 
 from analysis_core.errors import JobError
-from analysis_core.job.reader import JobLoader, read_yaml
+from analysis_core.job.yaml_text import JobLoader, read_yaml
 
 Data = dict[str, Any]
 

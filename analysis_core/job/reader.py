@@ -6,20 +6,16 @@ for editors.
 
 from __future__ import annotations
 
-import csv
-import json
 import math
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import replace
-from importlib import resources
 from pathlib import Path
 from typing import Any
 
-import yaml
-
 from analysis_core.errors import JobError
 from analysis_core.job.check import Position, check
-from analysis_core.job.sections import csv_rows, table_sections
+from analysis_core.job.section_tables import SectionTable, read_files, section_table
+from analysis_core.job.yaml_text import LARGEST, read_yaml, schema, text_of
 from analysis_core.settings import (
     ActionSetting,
     Analysis,
@@ -31,6 +27,7 @@ from analysis_core.settings import (
     Display,
     Limits,
     MaterialSetting,
+    MemberSetting,
     MovementSetting,
     Redistribution,
     ReleaseSetting,
@@ -44,7 +41,6 @@ from analysis_core.settings import (
 )
 from analysis_core.units import display_units
 
-_LARGEST = 4_000_000  # bytes; a job file is written by hand
 _CONDITIONS = {
     # (vertical, horizontal, rotation) of the supports that have a name in the trade.
     "pinned": (math.inf, math.inf, 0.0),
@@ -61,7 +57,7 @@ def load(path: str | Path) -> Settings:
     Raises JobError in one sentence that names the place, what was received and what is permitted.
     """
     path = Path(path)
-    text = _text(path, "Job file")
+    text = text_of(path, "Job file")
     try:
         return parse(text, folder=path.parent)
     except JobError as error:
@@ -74,108 +70,31 @@ def parse(text: str, *, folder: Path | None = None) -> Settings:
     ``folder``: where the job file stands, for a section table in a file beside it; without, such
     a table is named in the settings but not read.
     """
-    if len(text) > _LARGEST:
-        raise JobError(f"It is {len(text)} characters long; a job file has at most {_LARGEST}.")
+    if len(text) > LARGEST:
+        raise JobError(f"It is {len(text)} characters long; a job file has at most {LARGEST}.")
     data = read_yaml(text)
     checked = check({} if data is None else data, schema())
-    table = checked.get("section_table", ())
-    if isinstance(table, str):
-        return replace(
-            _settings({**checked, "section_table": _table_of(table, folder)}, text),
-            section_table_file=table,
-        )
-    return _settings(checked, text)
+    return _with_table(
+        _settings(checked, text), section_table(checked.get("section_table", ()), folder)
+    )
 
 
-def with_section_table(settings: Settings, path: Path) -> Settings:
-    """Return settings with the section table of a file in the place of their own.
+def with_section_tables(settings: Settings, paths: Sequence[Path]) -> Settings:
+    """Return settings with the section tables of files in the place of their own.
 
-    Raises JobError.
+    A file is a table as in the job file (CSV, YAML), or a list of profiles without a head; see
+    ``profile_lists``.  Raises JobError.
     """
-    rows = _table_of(path.name, path.resolve().parent)
-    return replace(settings, section_table=table_sections(rows), section_table_file=path.name)
+    return _with_table(settings, read_files(paths))
 
 
-def _text(path: Path, what: str) -> str:
-    try:
-        raw = path.read_bytes()
-    except OSError as error:
-        reason = error.strerror or error
-        raise JobError(f"{what} '{path}' cannot be read: {reason}.") from None
-    try:
-        return raw.decode("utf-8-sig")
-    except UnicodeDecodeError:
-        raise JobError(f"{what} '{path}' is not UTF-8 text; save it as UTF-8.") from None
-
-
-def _table_of(name: str, folder: Path | None) -> Any:
-    """The checked rows of a section table in a file of its own."""
-    if folder is None:
-        return ()
-    text = _text(folder / name, "Section table")
-    try:
-        if len(text) > _LARGEST:
-            raise JobError(f"it is {len(text)} characters long; {_LARGEST} are allowed.")
-        rows = csv_rows(text) if name.lower().endswith(".csv") else read_yaml(text)
-        if isinstance(rows, dict) and set(rows) == {"section_table"}:
-            rows = rows["section_table"]
-        if not isinstance(rows, list):
-            raise JobError("it must be a list of sections.")
-        return check({"section_table": rows}, schema())["section_table"]
-    except (JobError, csv.Error) as error:
-        raise JobError(f"Section table '{name}': {error}") from None
-
-
-def read_yaml(text: str) -> Any:
-    """Return the plain data of a job file's text, unchecked.  Raises JobError."""
-    try:
-        return yaml.load(text, Loader=JobLoader)
-    except yaml.YAMLError as error:
-        raise JobError(f"It is not YAML: {' '.join(str(error).split())}.") from None
-    except RecursionError:
-        raise JobError("It is nested too deeply; a job file has a few levels.") from None
-
-
-def schema() -> dict[str, Any]:
-    """Return the JSON schema of the job file."""
-    source = resources.files("analysis_core.job").joinpath("job_schema.json")
-    loaded: dict[str, Any] = json.loads(source.read_text(encoding="utf-8"))
-    return loaded
-
-
-class JobLoader(yaml.SafeLoader):
-    """The safe loader with the booleans of YAML 1.2; it also refuses repeated keys and aliases.
-
-    In YAML 1.1 the words on, off, yes and no are booleans; here they are words.  YAML keeps the
-    last of two equal keys in silence; a load would vanish.  Aliases make files that grow without
-    bound.
-    """
-
-    yaml_implicit_resolvers = {  # noqa: RUF012  # the name and form that yaml asks for
-        first: [
-            (tag, pattern)
-            for tag, pattern in resolvers
-            if tag != "tag:yaml.org,2002:bool" or first in "tTfF"
-        ]
-        for first, resolvers in yaml.SafeLoader.yaml_implicit_resolvers.items()
-    }
-
-    def compose_node(self, parent: Any, index: Any) -> Any:
-        if self.check_event(yaml.events.AliasEvent):
-            mark = self.peek_event().start_mark  # type: ignore[no-untyped-call]
-            raise JobError(f"Line {mark.line + 1} uses a YAML alias (*); write the value out.")
-        return super().compose_node(parent, index)
-
-    def construct_mapping(self, node: Any, deep: bool = False) -> Any:
-        seen: set[Any] = set()
-        for key_node, _ in node.value:
-            key = key_node.value
-            if isinstance(key, str) and key in seen:
-                line = key_node.start_mark.line + 1
-                raise JobError(f"Line {line} states the key '{key}' a second time; join the two.")
-            if isinstance(key, str):
-                seen.add(key)
-        return super().construct_mapping(node, deep=deep)
+def _with_table(settings: Settings, table: SectionTable) -> Settings:
+    return replace(
+        settings,
+        section_table=table.sections,
+        section_table_file=table.file,
+        section_table_findings=table.findings,
+    )
 
 
 def _settings(data: Mapping[str, Any], text: str) -> Settings:
@@ -201,7 +120,7 @@ def _settings(data: Mapping[str, Any], text: str) -> Settings:
         releases=each("releases", _release),
         materials=each("materials", _material),
         sections=each("sections", _section),
-        section_table=table_sections(data.get("section_table", ())),
+        members=each("members", _member),
         limits=each("limits", _limits),
         checks=_checks(data.get("checks", {})),
         text=text,
@@ -411,6 +330,18 @@ def _section(data: Mapping[str, Any], where: str) -> SectionSetting:
     if taper and (places[0] != 0.0 or places[-1] != 1.0 or places != sorted(places)):
         raise JobError(f"'{where}.taper' must go from 0 to 1 in order.")
     return SectionSetting(on=_selector(data["on"]), taper=tuple(taper), source=where, **known)
+
+
+def _member(data: Mapping[str, Any], where: str) -> MemberSetting:
+    profile, material = (data.get(key, "").strip() for key in ("profile", "material"))
+    if not (profile or material):
+        raise JobError(f"'{where}' gives the members nothing; state a 'profile' or a 'material'.")
+    if "line" in data["on"]:
+        raise JobError(
+            f"'{where}.on' names a line; lines are only known once members have their sections. "
+            f"Name the elements (id, name, type, material, storey)."
+        )
+    return MemberSetting(_selector(data["on"]), profile, material, where)
 
 
 def _limits(data: Mapping[str, Any], where: str) -> Limits:

@@ -57,7 +57,8 @@ def csv_rows(text: str) -> list[dict[str, str]]:
 def _section(row: Mapping[str, Any], where: str) -> TableSection:
     name, shape = row["name"].strip(), row["shape"]
     needed, possible = _SHAPES[shape]
-    given = {k: v for k, v in row.items() if k not in ("name", "shape")}
+    given = {k: v for k, v in row.items() if k not in ("name", "shape", "category")}
+    category = row.get("category", "").strip()
     missing = [k for k in needed if k not in given]
     if not name:
         raise JobError(f"'{where}' has an empty name.")
@@ -73,4 +74,4 @@ def _section(row: Mapping[str, Any], where: str) -> TableSection:
             )
         if value < 0.0 or (key in needed and value == 0.0):
             raise JobError(f"'{where}' ('{name}') has a {key} of {value:g} m; it must be positive.")
-    return TableSection(name, shape, given)
+    return TableSection(name, shape, given, (category,) if category else ())

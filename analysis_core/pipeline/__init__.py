@@ -4,7 +4,7 @@ This is the one package that knows all the parts; the command line and the add-o
 nothing else.
 """
 
-from analysis_core.pipeline.choosing import lightest
+from analysis_core.pipeline.choosing import lightest, lightest_of, offered
 from analysis_core.pipeline.documents import (
     document,
     is_check_code,
@@ -16,7 +16,7 @@ from analysis_core.pipeline.documents import (
     sheet,
     survey_document,
 )
-from analysis_core.pipeline.reading import Reading, Survey, idealised, read, survey
+from analysis_core.pipeline.reading import Reading, Survey, idealised, read, stock, survey
 from analysis_core.pipeline.solving import (
     checks,
     of_lines,
@@ -27,7 +27,13 @@ from analysis_core.pipeline.solving import (
     run,
     solve,
 )
-from analysis_core.pipeline.writing import MemberUpdate, post, remove, update_members
+from analysis_core.pipeline.writing import (
+    MemberUpdate,
+    member_changes,
+    post,
+    remove,
+    update_members,
+)
 
 __all__ = [
     "MemberUpdate",
@@ -40,8 +46,11 @@ __all__ = [
     "issues",
     "job_text",
     "lightest",
+    "lightest_of",
+    "member_changes",
     "of_lines",
     "of_storeys",
+    "offered",
     "post",
     "posted_states",
     "reactions_csv",
@@ -54,6 +63,7 @@ __all__ = [
     "run",
     "sheet",
     "solve",
+    "stock",
     "survey",
     "survey_document",
     "update_members",

@@ -6,6 +6,7 @@ import difflib
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from analysis_core import idealise
 from analysis_core.building import Building
@@ -18,6 +19,9 @@ from analysis_core.model import LineModel
 from analysis_core.pipeline.progress import Progress, silent
 from analysis_core.settings import Settings
 from analysis_core.solving.stacks import Standing, standing_elements
+
+if TYPE_CHECKING:
+    from analysis_core.ifc.updating.stock import Stock
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -35,9 +39,13 @@ class Reading:
     settings: Settings
     posted: Mapping[str, tuple[Posted, ...]] = field(default_factory=dict)
     """What was posted earlier, by the GlobalId of the element."""
+    stock: Stock | None = None
+    """Profiles and materials of the file, where they were asked for."""
 
     def serves(self, settings: Settings) -> bool:
         """Whether the file need not be read again for other settings."""
+        if settings.members and self.stock is None:
+            return False
         return _asked_of_reading(self.settings) == _asked_of_reading(settings)
 
 
@@ -96,18 +104,37 @@ def read(
         (*source.findings, *building.findings),
         settings,
         posted,
+        _stock(source, settings) if settings.members else None,
     )
+
+
+def stock(path: str | Path, settings: Settings | None = None) -> Stock:
+    """Return the profiles and materials that a file has.  Raises IfcReadError."""
+    return _stock(ifc_source.open_model(path), settings or Settings())
+
+
+def _stock(source: ifc_source.Source, settings: Settings) -> Stock:
+    from analysis_core.ifc.updating.stock import read_stock
+
+    return read_stock(source, settings)
 
 
 def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ()) -> Survey:
     """Idealise what was read; lines keep the marks they were posted with.  Raises JobError."""
-    model = idealise.idealise(reading.building, settings)
-    findings = tuple(dict.fromkeys((*reading.findings, *model.findings)))
+    building, told = reading.building, settings.section_table_findings
+    if settings.members:
+        from analysis_core.given_members import with_given
+
+        assert reading.stock is not None  # it was read for these settings
+        building, changed = with_given(building, reading.stock, settings)
+        told = (*told, *changed)
+    model = idealise.idealise(building, settings)
+    findings = tuple(dict.fromkeys((*reading.findings, *told, *model.findings)))
     model = replace(
         model,
         findings=findings,
-        names=_names(reading.building),
-        held_by=held_by_slabs(reading.building),
+        names=_names(building),
+        held_by=held_by_slabs(building),
     )
     check_marks(model, only)
     return Survey(
@@ -116,9 +143,9 @@ def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ())
         reading.fingerprint,
         model,
         findings,
-        reading.building.route,
-        counts=reading.building.counts,
-        standing=standing_elements(reading.building),
+        building.route,
+        counts=building.counts,
+        standing=standing_elements(building),
         posted=reading.posted,
     )
 
@@ -154,7 +181,8 @@ def _asked_of_reading(settings: Settings) -> Settings:
     blank = Settings()
     later = (
         "title", "text", "display", "rules", "cases", "combinations", "actions", "movements",
-        "supports", "releases", "sections", "limits", "checks",
+        "supports", "releases", "sections", "limits", "checks", "members", "section_table",
+        "section_table_file", "section_table_findings",
     )  # fmt: skip
     return replace(settings, **{name: getattr(blank, name) for name in later})
 

@@ -4,21 +4,21 @@ from __future__ import annotations
 
 import tempfile
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from analysis_core.ifc import source as ifc_source
 from analysis_core.ifc.posting.posted import known_marks, read_posted
 from analysis_core.pipeline.progress import Progress
-from analysis_core.pipeline.reading import check_marks, idealised, read, with_marks
+from analysis_core.pipeline.reading import Survey, check_marks, idealised, read, stock, with_marks
 from analysis_core.pipeline.solving import solve
 from analysis_core.results import LineResult, Outcome, Stations
 from analysis_core.settings import Settings
 
 if TYPE_CHECKING:
     from analysis_core.ifc.posting.writer import PostReport, RemoveReport
-    from analysis_core.ifc.updating import Change
+    from analysis_core.ifc.updating import Change, Updated
 
 
 # Section forces along members of an analysis model: at the tenths of each, ends included.
@@ -82,37 +82,66 @@ def update_members(
     *,
     sections: Mapping[str, str] | None = None,
     materials: Mapping[str, str] | None = None,
+    given: bool = False,
     analysis_model: bool = False,
     progress: Progress | None = None,
 ) -> MemberUpdate:
     """Write changed sections and materials into a copy of a model, solve it again and post.
 
     ``sections`` and ``materials`` give the name of a profile or material, of the model or the job
-    file, by the mark of a line or the GlobalId of an element.  ``target`` may be ``source``.
+    file, by the mark of a line or the GlobalId of an element.  ``given``: what the job file gives
+    members as well, where nothing else is named for them.  ``target`` may be ``source``.
     Everything is written at once, or nothing.  Raises IfcReadError, JobError, IfcWriteError.
     """
-    from analysis_core.ifc.updating import update
-    from analysis_core.member_update import check_update, wishes
+    from analysis_core.member_update import check_update
 
     settings = settings or Settings()
-    marks = known_marks(read_posted(ifc_source.open_model(source)))
+    as_read = replace(settings, members=())
     with tempfile.TemporaryDirectory() as folder:
         copy = Path(folder) / Path(source).name
-        remove(source, copy)
-        before = with_marks(read(copy, settings, progress=progress), marks)
-        found = idealised(before, settings)
-        wanted = wishes(
-            found.model,
-            before.building,
-            settings,
-            sections=sections or {},
-            materials=materials or {},
+        found, updated = _updated(
+            source, copy, settings, sections or {}, materials or {}, given=given, progress=progress
         )
-        updated = update(copy, wanted, settings)
         copy.write_bytes(b"".join(updated.parts))
-        after = read(copy, settings, progress=progress)
+        after = read(copy, as_read, progress=progress)
         check_update(updated, after.building)
         marks = {e: line.mark for line in found.model.lines for e in line.elements}
-        outcome = solve(idealised(with_marks(after, marks), settings), settings, progress=progress)
+        again = idealised(with_marks(after, marks), as_read)
+        outcome = solve(again, as_read, progress=progress)
         report = post(outcome, copy, target, progress=progress, analysis_model=analysis_model)
     return MemberUpdate(outcome, report, updated.changes)
+
+
+def member_changes(
+    source: str | Path, settings: Settings, *, progress: Progress | None = None
+) -> tuple[Change, ...]:
+    """Return what writing the members that the job file gives would change in a model.
+
+    Nothing is written.  Raises IfcReadError, JobError.
+    """
+    with tempfile.TemporaryDirectory() as folder:
+        copy = Path(folder) / Path(source).name
+        _, updated = _updated(source, copy, settings, {}, {}, given=True, progress=progress)
+    return updated.changes
+
+
+def _updated(
+    source: str | Path, copy: Path, settings: Settings, sections: Mapping[str, str],
+    materials: Mapping[str, str], *, given: bool, progress: Progress | None,
+) -> tuple[Survey, Updated]:  # fmt: skip
+    """The survey before a change and the changed model; ``copy`` holds it without our results."""
+    from analysis_core.given_members import outstanding
+    from analysis_core.ifc.updating import update
+    from analysis_core.member_update import wishes
+
+    as_read = replace(settings, members=())
+    opened = ifc_source.open_model(source)
+    marks = known_marks(read_posted(opened))
+    remove(source, copy)
+    before = with_marks(read(copy, as_read, progress=progress), marks)
+    found = idealised(before, as_read)
+    more = outstanding(before.building, stock(copy, settings), settings) if given else None
+    wanted = wishes(
+        found.model, before.building, settings, sections=sections, materials=materials, given=more
+    )
+    return found, update(copy, wanted, settings)

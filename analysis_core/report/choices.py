@@ -6,18 +6,26 @@ import math
 from collections.abc import Sequence
 from typing import Any
 
-from analysis_core.checking.choosing import Choice, Effect
+from analysis_core.checking.choosing import Choice, Effect, Tried
+from analysis_core.findings import listed
 from analysis_core.report.tables import safe, table
 from analysis_core.units import DisplayUnits
 
+_MOST = 25  # rows of a table of candidates
 
-def choices_text(choices: Sequence[Choice], units: DisplayUnits) -> str:
-    """Return what was tried for each group of lines, what was chosen, and what it does."""
+
+def choices_text(choices: Sequence[Choice], units: DisplayUnits, table_file: str = "") -> str:
+    """Return what was tried for each group of lines, what was chosen, and what it does.
+
+    ``table_file``: the table that was chosen from, where it is none of the model or the job.
+    """
     parts = [_one(choice, units) for choice in choices]
     chosen = [(mark, c.chosen) for c in choices if c.chosen != c.before and c.chosen
               for mark in c.marks]  # fmt: skip
     if chosen:
         options = " ".join(f"--section {_quoted(f'{mark}={name}')}" for mark, name in chosen)
+        if table_file:
+            options += f" --table {_quoted(table_file)}"
         parts.append(f"Nothing is changed yet. To apply: spanledger post MODEL -o OUT {options}")
     return "\n\n".join(parts)
 
@@ -28,10 +36,12 @@ def choices_data(choices: Sequence[Choice]) -> list[dict[str, Any]]:
         {
             "lines": list(c.marks), "before": c.before, "chosen": c.chosen or None,
             "mass_per_length": {"before": c.mass_before, "after": c.mass_after},
-            "length": c.length, "reason": c.reason or None,
+            "length": c.length, "reason": c.reason or None, "left_out": list(c.left_out),
             "tried": [
                 {"name": t.name, "mass_per_length": t.mass, "use": _finite(t.use),
-                 "governed_by": t.governed_by, "suits": t.suits, "reason": t.reason or None}
+                 "deflection": t.deflection, "governed_by": t.governed_by, "suits": t.suits,
+                 "reason": t.reason or None, "categories": list(t.categories),
+                 "origin": t.origin}
                 for t in c.tried
             ],
             "effects": [
@@ -50,13 +60,27 @@ def _one(choice: Choice, units: DisplayUnits) -> str:
     title = f"Lightest section for {marks} (now {safe(choice.before) or 'none'})"
     if choice.reason:
         return f"{title}\nNothing was tried: {safe(choice.reason)}."
+    shown = choice.tried[-_MOST:]
     rows = [
-        (safe(t.name), f"{t.mass:.1f}", _use(t.use), safe(t.governed_by),
-         "chosen" if t.suits else safe(t.reason) or "too weak")
-        for t in choice.tried
+        (safe(t.name), f"{t.mass:.1f}", _use(t.use), _deflection(t, units), safe(t.governed_by),
+         _verdict(t))
+        for t in shown
     ]  # fmt: skip
-    head = ("candidate", "mass", "use", "governed by", "")
-    parts = [title, table(head, ("", "kg/m", "", "", ""), rows)]
+    head = ("candidate", "mass", "use", "deflection", "governed by", "")
+    parts = [title]
+    if choice.left_out:
+        parts.append(
+            f"Left out as made of another material ({len(choice.left_out)}): "
+            f"{safe(listed(choice.left_out))}."
+        )
+    if len(choice.tried) > len(shown):
+        hidden = len(choice.tried) - len(shown)
+        parts.append(f"The {hidden} lightest did not suit and are not listed here; --json has all.")
+    if not rows:
+        return "\n".join([*parts, "There is nothing to choose from."])
+    deflection = units.symbol("deflection")
+    parts.append(table(head, ("", "kg/m", "", deflection, "", ""), rows))
+    parts += [f"  {safe(t.name)}: {safe(t.reason)}" for t in shown if t.reason]
     if not choice.chosen:
         return "\n".join([*parts, "None of them suits."])
     if choice.chosen == choice.before:
@@ -75,6 +99,16 @@ def _one(choice: Choice, units: DisplayUnits) -> str:
                   ("", force, force, "", ""), effects)
         )  # fmt: skip
     return "\n".join(parts)
+
+
+def _verdict(tried: Tried) -> str:
+    if tried.suits:
+        return "chosen"
+    return safe(tried.reason.partition(":")[0]) or "too weak"
+
+
+def _deflection(tried: Tried, units: DisplayUnits) -> str:
+    return "-" if tried.deflection is None else units.number(tried.deflection, "deflection")
 
 
 def _effect(e: Effect, units: DisplayUnits) -> tuple[str, ...]:

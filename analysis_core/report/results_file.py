@@ -38,7 +38,7 @@ def results_document(outcome: Outcome, *, stations: int = 21) -> dict[str, Any]:
         "combinations": {c.name: _combination(c) for c in outcome.model.combinations},
         "lines": [_line(result, stations) for result in outcome.lines],
         "received": [_received(each) for each in cast(tuple[Received, ...], outcome.received)],
-        "findings": [_finding(finding) for finding in outcome.findings],
+        "findings": [finding_data(finding) for finding in outcome.findings],
     }
 
 
@@ -72,7 +72,8 @@ def _combination(combination: Combination) -> dict[str, Any]:
     }
 
 
-def _finding(finding: Finding) -> dict[str, Any]:
+def finding_data(finding: Finding) -> dict[str, Any]:
+    """Return a finding as plain data."""
     return {
         "slug": finding.slug,
         "severity": finding.severity,

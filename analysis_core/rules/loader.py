@@ -14,7 +14,7 @@ from typing import Any
 
 from analysis_core.errors import JobError
 from analysis_core.job.check import check
-from analysis_core.job.reader import read_yaml
+from analysis_core.job.yaml_text import read_yaml
 from analysis_core.rules.model import (
     PSI,
     ActionClass,

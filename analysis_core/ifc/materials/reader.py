@@ -9,6 +9,8 @@ from dataclasses import dataclass, replace
 from fnmatch import fnmatchcase
 from typing import Any
 
+import ifcopenshell
+
 from analysis_core.findings import Finding
 from analysis_core.ifc.file_units import FileUnits, UnitError
 from analysis_core.ifc.materials.choice import Choice, choose
@@ -107,6 +109,14 @@ def read_material(
     stated = _stated(_properties_of(choice.material), units)
     material, findings = _material(choice.material, stated, settings)
     return material, [*_choice_findings(choice), *findings]
+
+
+def named_material(name: str, category: str, settings: Settings) -> Material:
+    """Return the material of which no more is known than its name and category."""
+    entity = ifcopenshell.file(schema="IFC4").create_entity(
+        "IfcMaterial", Name=name, Category=category or None
+    )
+    return _material(entity, Stated({}, ()), settings)[0]
 
 
 def material_and_profile_of(source: Any) -> dict[int, Choice]:

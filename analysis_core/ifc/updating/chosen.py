@@ -3,39 +3,16 @@
 from __future__ import annotations
 
 import difflib
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable
 from typing import Any
 
 from analysis_core.errors import JobError
 from analysis_core.ifc.sections.reader import SectionReader, measures_of
 from analysis_core.ifc.updating.editor import Editor
+from analysis_core.ifc.updating.made import made_profile
+from analysis_core.ifc.updating.stock import alike
 from analysis_core.model import Section
 from analysis_core.settings import MaterialSetting, Settings, TableSection
-
-_SAME = 1e-6
-
-# Class and attributes of the standard for each shape of a section table.
-_CLASSES: dict[str, tuple[str, Mapping[str, str]]] = {
-    "I": ("IfcIShapeProfileDef", {
-        "OverallDepth": "depth", "OverallWidth": "width", "WebThickness": "web_thickness",
-        "FlangeThickness": "flange_thickness", "FilletRadius": "fillet_radius"}),
-    "rectangle": ("IfcRectangleProfileDef", {"YDim": "depth", "XDim": "width"}),
-    "hollow rectangle": ("IfcRectangleHollowProfileDef", {
-        "YDim": "depth", "XDim": "width", "WallThickness": "wall_thickness",
-        "OuterFilletRadius": "outer_radius", "InnerFilletRadius": "inner_radius"}),
-    "tube": ("IfcCircleHollowProfileDef", {
-        "Radius": "diameter", "WallThickness": "wall_thickness"}),
-    "circle": ("IfcCircleProfileDef", {"Radius": "diameter"}),
-    "channel": ("IfcUShapeProfileDef", {
-        "Depth": "depth", "FlangeWidth": "width", "WebThickness": "web_thickness",
-        "FlangeThickness": "flange_thickness", "FilletRadius": "fillet_radius"}),
-    "tee": ("IfcTShapeProfileDef", {
-        "Depth": "depth", "FlangeWidth": "width", "WebThickness": "web_thickness",
-        "FlangeThickness": "flange_thickness", "FilletRadius": "fillet_radius"}),
-    "angle": ("IfcLShapeProfileDef", {
-        "Depth": "depth", "Width": "width", "Thickness": "thickness",
-        "FilletRadius": "fillet_radius"}),
-}  # fmt: skip
 
 _MECHANICAL = {  # our name: name in the standard's sets, measure
     "elastic_modulus": ("YoungModulus", "IfcModulusOfElasticityMeasure"),
@@ -58,10 +35,10 @@ class Chooser:
         stated = next((s for s in self._settings.section_table if s.name == name), None)
         if stated is None and not found:
             raise JobError(self._unknown_profile(name))
-        if stated is None:
+        if stated is None or (found and stated.origin):  # a list of others gives way to the model
             return self._one_of(name, found)
         made = self._made(stated)
-        if found and not _alike(self._section(found[0]), self._section(made)):
+        if found and not alike(self._section(found[0]), self._section(made)):
             raise JobError(
                 f"The profile '{name}' of the model has other dimensions than that of the section "
                 f"table. Give the one in the table another name."
@@ -93,7 +70,7 @@ class Chooser:
 
     def _one_of(self, name: str, found: list[Any]) -> Any:
         first = self._section(found[0])
-        if not all(_alike(first, self._section(other)) for other in found[1:]):
+        if not all(alike(first, self._section(other)) for other in found[1:]):
             raise JobError(
                 f"The model has profiles of different dimensions with the name '{name}', so it "
                 f"does not say which is meant. Put the one that is meant into the section table "
@@ -107,19 +84,7 @@ class Chooser:
         return section
 
     def _made(self, stated: TableSection) -> Any:
-        ifc_class, attributes = _CLASSES[stated.shape]
-        length = self._editor.units.length
-        values = {}
-        for attribute, ours in attributes.items():
-            if ours in stated.dimensions:
-                value = stated.dimensions[ours] / length
-                # The standard wants the radius where the trade states the diameter.
-                values[attribute] = round(value / 2 if attribute == "Radius" else value, 9)
-        origin = self._editor.new("IfcCartesianPoint", Coordinates=(0.0, 0.0))
-        made = self._editor.new(
-            ifc_class, ProfileType="AREA", ProfileName=stated.name,
-            Position=self._editor.new("IfcAxis2Placement2D", Location=origin), **values,
-        )  # fmt: skip
+        made = made_profile(self._editor.new, stated, length=self._editor.units.length)
         if self.sections.profile(made) is None:
             raise JobError(
                 f"The section '{stated.name}' of the section table cannot be drawn: "
@@ -163,14 +128,6 @@ class Chooser:
             f"There is no profile '{name}' in the model or in a section table of the job file"
             f"{_nearest(name, known)}. State it there (section_table: name, shape, dimensions)."
         )
-
-
-def _alike(one: Section, other: Section) -> bool:
-    pairs = (
-        (one.area, other.area),
-        (one.inertia + one.inertia_lateral, other.inertia + other.inertia_lateral),
-    )
-    return all(abs(a - b) <= _SAME * max(abs(a), abs(b)) for a, b in pairs)
 
 
 def _nearest(name: str, known: Iterable[str | None]) -> str:

@@ -1,0 +1,145 @@
+"""What there is to choose from: profiles of a model or of a section table, and which of them suit.
+
+Names and categories of profiles are no standard, so the engineer can name those that are meant.
+Where none are named, a member is offered what is made of its material as far as names and shapes
+tell; what was left out is said.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import dataclass
+from fnmatch import fnmatchcase
+
+from analysis_core.errors import JobError
+from analysis_core.findings import Finding, listed
+from analysis_core.ifc.materials.table import kind_of
+from analysis_core.ifc.updating.stock import Stock, Stocked, alike
+from analysis_core.model import Section
+from analysis_core.settings import Settings, TableSection
+
+MODEL, JOB = "model", "job"
+# A profile of the same name in the model, without fillets say, is the same one up to here.
+_SAME_PROFILE = 0.1
+# Common practice, for profiles that say nothing of their material.
+_WALLED = frozenset({"channel", "angle", "tube", "hollow rectangle", "zed", "lipped channel"})
+_NOT_MADE_OF = {
+    "steel": frozenset({"rectangle"}),
+    "concrete": _WALLED,
+    "timber": _WALLED | {"tee"},
+}
+_KINDS = {"glulam": "timber", "lvl": "timber", "hardwood": "timber", "lightweight concrete":
+          "concrete", "stainless": "steel"}  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class Candidate:
+    """A section by its name; ``origin``: "model", "job" or the name of the list it stands in."""
+
+    name: str
+    section: Section
+    categories: tuple[str, ...] = ()
+    origin: str = MODEL
+
+    @property
+    def kind(self) -> str:
+        """What name and categories say that it is made of: "steel", "timber", …, or ""."""
+        told = kind_of(" ".join((*self.categories, self.name)))
+        return _KINDS.get(told, told)
+
+
+@dataclass(frozen=True, slots=True)
+class Offer:
+    """Candidates in the order of their source, and what was noticed about them."""
+
+    candidates: tuple[Candidate, ...]
+    findings: tuple[Finding, ...] = ()
+
+
+def of_model(stock: Stock) -> Offer:
+    """Return the profiles of a model."""
+    return Offer(tuple(Candidate(n, stocked.section()) for n, stocked in stock.profiles.items()))
+
+
+def of_table(
+    stock: Stock,
+    settings: Settings,
+    draw: Callable[[TableSection], Stocked],
+    only: Sequence[str] = (),
+) -> Offer:
+    """Return the sections of the section table that fit ``only``, as they would be written.
+
+    A profile of the model takes the place of one from a list that has its name; one that is
+    another altogether is left out.  Raises JobError where a section cannot be drawn, or where the
+    engineer states one otherwise than the model has it.
+    """
+    found, taken, clashing = [], [], []
+    for row in settings.section_table:
+        if not _fits(row.name, row.categories, only):
+            continue
+        section, known = draw(row).section(), stock.profiles.get(row.name)
+        own = known.section() if known is not None else None
+        if own is not None and not alike(own, section):
+            if not row.origin:
+                raise JobError(
+                    f"The profile '{row.name}' of the model has other dimensions than that of the "
+                    f"section table. Give the one in the table another name."
+                )
+            if abs(own.area - section.area) > _SAME_PROFILE * own.area:
+                clashing.append(row.name)
+                continue
+            taken.append(row.name)
+            section = own
+        found.append(Candidate(row.name, section, row.categories, row.origin or JOB))
+    return Offer(tuple(found), tuple(_notes(taken, clashing)))
+
+
+def only(candidates: Iterable[Candidate], patterns: Sequence[str]) -> list[Candidate]:
+    """Return those whose name or category fits one of the patterns (wildcards, case ignored)."""
+    return [c for c in candidates if _fits(c.name, c.categories, patterns)]
+
+
+def made_of(
+    candidates: Iterable[Candidate], material: str
+) -> tuple[list[Candidate], list[Candidate]]:
+    """Return what can be made of a category of material, and what cannot.
+
+    What says nothing of its material is judged by its shape: beams of steel are not solid
+    rectangles, those of concrete and timber no hollow sections.
+    """
+    fitting: list[Candidate] = []
+    others: list[Candidate] = []
+    for candidate in candidates:
+        (fitting if _can_be_of(candidate, material) else others).append(candidate)
+    return fitting, others
+
+
+def _can_be_of(candidate: Candidate, material: str) -> bool:
+    if candidate.kind and material:
+        return candidate.kind == material
+    return candidate.section.shape not in _NOT_MADE_OF.get(material, ())
+
+
+def _fits(name: str, categories: Sequence[str], patterns: Sequence[str]) -> bool:
+    return not patterns or any(
+        fnmatchcase(text.casefold(), pattern.strip().casefold())
+        for pattern in patterns
+        for text in (name, *categories)
+    )
+
+
+def _notes(taken: Sequence[str], clashing: Sequence[str]) -> Iterable[Finding]:
+    if taken:
+        yield Finding(
+            "note",
+            "profile-of-model",
+            f"{listed(taken)}: the model has profiles of these names with slightly other "
+            f"dimensions (fillets, say); they are used in place of those of the list.",
+        )
+    if clashing:
+        yield Finding(
+            "warning",
+            "profile-clashes",
+            f"{listed(clashing)}: the model has other profiles of these names, so those of the "
+            f"list are left out.",
+        )
