@@ -83,3 +83,20 @@ def test_an_element_stands_on_the_nearest_below_it_and_not_on_one_aside():
 
     on = {s.name: s.on for s in found}
     assert on == {"top": "middle", "middle": "beside", "aside": None, "low": None, "beside": None}
+
+
+def test_an_element_of_absurd_extent_is_no_burden_and_still_carries():
+    def box(name, ifc_class, half, bottom, top):
+        corners = ((-half, -half), (half, -half), (half, half), (-half, half))
+        return Carrier(name, name, ifc_class, bottom, top, corners)
+
+    found = standing_elements(
+        Building(
+            "physical", "IFC4",
+            carriers=(
+                box("column", "IfcColumn", 0.2, 0.0, 3.0), box("raft", "IfcFooting", 5e7, -1.0, 0.0)
+            ),
+        )
+    )  # fmt: skip
+
+    assert {s.name: s.on for s in found} == {"column": "raft", "raft": None}

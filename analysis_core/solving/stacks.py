@@ -10,7 +10,10 @@ from __future__ import annotations
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
+import numpy as np
+
 from analysis_core.building import Building, Carrier
+from analysis_core.idealise.pairs import Floats, overlapping
 from analysis_core.results import LineResult
 
 _STANDING = ("IfcColumn", "IfcWall", "IfcFooting", "IfcPile")
@@ -53,12 +56,13 @@ def standing_elements(building: Building) -> tuple[Standing, ...]:
     for carrier in building.carriers:
         if carrier.ifc_class.startswith(_STANDING):
             carriers.setdefault(carrier.global_id, []).append(carrier)
-    parts = {key: _extent(pieces) for key, pieces in carriers.items()}
-    cells = _cells(parts)
+    extents = np.array([_extent(pieces) for pieces in carriers.values()]).reshape(-1, 6)
+    below = _below(list(carriers), extents)
     out = [
         Standing(
             key, pieces[0].name, pieces[0].ifc_class, pieces[0].storey,
-            parts[key].bottom, parts[key].top, _below(key, parts, cells),
+            min(piece.bottom for piece in pieces), max(piece.top for piece in pieces),
+            below.get(key),
         )
         for key, pieces in carriers.items()
     ]  # fmt: skip
@@ -102,58 +106,36 @@ def received(
     return tuple(out)
 
 
-@dataclass(frozen=True, slots=True)
-class _Extent:
-    bottom: float
-    top: float
-    low: tuple[float, float]
-    high: tuple[float, float]
-
-    @property
-    def middle(self) -> tuple[float, float]:
-        return (self.low[0] + self.high[0]) / 2.0, (self.low[1] + self.high[1]) / 2.0
-
-
-def _extent(pieces: Sequence[Carrier]) -> _Extent:
-    xs = [x for c in pieces for x, _ in c.corners]
-    ys = [y for c in pieces for _, y in c.corners]
-    return _Extent(
-        min(c.bottom for c in pieces), max(c.top for c in pieces),
-        (min(xs, default=0.0), min(ys, default=0.0)), (max(xs, default=0.0), max(ys, default=0.0)),
+def _extent(pieces: Sequence[Carrier]) -> tuple[float, ...]:
+    """The box round an element: lowest x, y, z, then highest."""
+    xs = [x for piece in pieces for x, _ in piece.corners]
+    ys = [y for piece in pieces for _, y in piece.corners]
+    return (
+        min(xs, default=0.0), min(ys, default=0.0), min(piece.bottom for piece in pieces),
+        max(xs, default=0.0), max(ys, default=0.0), max(piece.top for piece in pieces),
     )  # fmt: skip
 
 
-def _cells(parts: Mapping[str, _Extent]) -> dict[tuple[int, int], list[str]]:
-    """Elements by squares of 5 m of the plan that they touch."""
-    cells: dict[tuple[int, int], list[str]] = {}
-    for key, part in parts.items():
-        for i in range(int(part.low[0] // 5.0), int(part.high[0] // 5.0) + 1):
-            for j in range(int(part.low[1] // 5.0), int(part.high[1] // 5.0) + 1):
-                cells.setdefault((i, j), []).append(key)
-    return cells
+def _below(keys: Sequence[str], extents: Floats) -> dict[str, str]:
+    """The element under the foot of each: the nearest below it, then the nearest aside.
 
-
-def _below(
-    key: str, parts: Mapping[str, _Extent], cells: Mapping[tuple[int, int], list[str]]
-) -> str | None:
-    """The element under the foot of another: the nearest below it, then the nearest aside."""
-    part = parts[key]
-    x, y = part.middle
-    i, j = int(x // 5.0), int(y // 5.0)
-    near = {k for a in (-1, 0, 1) for b in (-1, 0, 1) for k in cells.get((i + a, j + b), ())}
-    best: tuple[float, float, str] | None = None
-    for other in near:
-        below = parts[other]
-        gap = part.bottom - below.top
-        if other == key or not -_OVERLAP <= gap <= _REACH or below.bottom >= part.bottom - 1e-6:
-            continue
-        aside = _distance(below, x, y)
-        if aside <= _ASIDE and (best is None or (abs(gap), aside, other) < best):
-            best = abs(gap), aside, other
-    return best[2] if best else None
-
-
-def _distance(part: _Extent, x: float, y: float) -> float:
-    dx = max(part.low[0] - x, 0.0, x - part.high[0])
-    dy = max(part.low[1] - y, 0.0, y - part.high[1])
-    return float((dx * dx + dy * dy) ** 0.5)
+    ``extents`` (n, 6) are their boxes; elements with nothing under them are left out.
+    """
+    low, high = extents[:, :3], extents[:, 3:]
+    feet = np.column_stack([(low[:, :2] + high[:, :2]) / 2.0, low[:, 2]])
+    reach = np.array([_ASIDE, _ASIDE, _REACH]), np.array([_ASIDE, _ASIDE, _OVERLAP])
+    under = np.hstack([feet - reach[0], feet + reach[1]])
+    heads = np.hstack([low[:, :2], high[:, 2:], high])
+    upper, lower = overlapping(under, heads)
+    gap = feet[upper, 2] - high[lower, 2]
+    beside = np.maximum(low[lower, :2] - feet[upper, :2], feet[upper, :2] - high[lower, :2])
+    aside = np.hypot(*np.maximum(beside, 0.0).T)
+    stands = (upper != lower) & (aside <= _ASIDE) & (gap >= -_OVERLAP) & (gap <= _REACH)
+    stands &= low[lower, 2] < low[upper, 2] - 1e-6
+    found: dict[str, tuple[float, float, str]] = {}
+    pairs = np.column_stack([upper, lower])[stands].tolist()
+    measures = np.column_stack([np.abs(gap), aside])[stands].tolist()
+    for (a, b), (drop, off) in zip(pairs, measures, strict=True):
+        nearest = (drop, off, keys[b])
+        found[keys[a]] = min(found.get(keys[a], nearest), nearest)
+    return {key: nearest[2] for key, nearest in found.items()}
