@@ -203,6 +203,28 @@ def test_an_eccentric_connection_states_where_it_holds_the_member(
     assert first.eccentricity == pytest.approx((0.5, 0.0, 0.8))
 
 
+@pytest.mark.parametrize("schema", SCHEMAS)
+@pytest.mark.parametrize("sense", [1.0, -1.0])
+def test_an_eccentricity_by_distance_reaches_the_member_whichever_way_it_runs(
+    tmp_path: Path, schema: str, sense: float
+) -> None:
+    """IFC4, IfcConnectionPointEccentricity: distances between two points, from which is open."""
+    joints = (Joint("A", (0.0, 0.0, -0.8), pinned()), Joint("B", (6.0, 0.0, 0.0), pinned()))
+    ends = (0.0, 0.0, 0.0), (6.0, 0.0, 0.0)
+    member = Stick("M", *ends, (Link("A", on_member=(0.5, 0.0, 0.0)), Link("B")))
+    made = AnalysisFile(Model(joints, (member,)), schema=schema, units="mm_kN")
+    (relation,) = made.file.by_type("IfcRelConnectsWithEccentricity")
+    apart = [sense * made.units.of(value, "LENGTHUNIT") for value in (0.5, 0.0, 0.8)]
+    at_node = made.vertex(joints[0].point)
+    relation.ConnectionConstraint = made.create(
+        "IfcConnectionPointEccentricity", at_node, None, *apart
+    )
+    building = read(made, tmp_path)
+    first = min(building.attachments, key=lambda a: a.position)
+    assert first.position == pytest.approx(0.5)
+    assert first.eccentricity == pytest.approx((0.5, 0.0, 0.8))
+
+
 def test_an_eccentricity_that_belongs_to_an_edge_is_a_finding(tmp_path: Path) -> None:
     joints = (Joint("A", (0.0, 0.0, 0.0), pinned()), Joint("B", (6.0, 0.0, 0.0), pinned()))
     member = Stick(

@@ -22,6 +22,7 @@ from analysis_core.ifc.geometry.frames import Frame, Vector
 from analysis_core.settings import Tolerances
 
 _KINDS = ("LINEARSTIFFNESSUNIT",) * 3 + ("ROTATIONALSTIFFNESSUNIT",) * 3
+_SAME_POINT = 1e-6  # m
 _DIRECTIONS = ("x", "y", "z", "x (rotation)", "y (rotation)", "z (rotation)")
 
 
@@ -200,12 +201,24 @@ class ConditionReader:
         here = node.connection.point
         stated = self._topology.vertex(constraint[0])
         there = frames.point(local.frame, *stated) if stated is not None else here
-        if is_kind(constraint, "IfcConnectionPointEccentricity") and constraint[1] is None:
-            length = self._units.length
-            offsets = [float(v or 0.0) * length for v in constraint[2:5]]
-            if any(offsets):
-                there = frames.plus(here, frames.direction(local.frame, *offsets))
+        unsaid = frames.length(frames.minus(there, here)) <= _SAME_POINT
+        if is_kind(constraint, "IfcConnectionPointEccentricity") and unsaid:
+            there = self._by_distance(constraint, local, here)
         return there, frames.minus(there, here)
+
+    def _by_distance(self, constraint: Any, local: Local, here: Vector) -> Vector:
+        """Return the point on the member from its distance along the axes of its placement.
+
+        The standard does not say from which of both the distance runs: whichever way meets the
+        member is meant.
+        """
+        length = self._units.length
+        offsets = [float(constraint[index] or 0.0) * length for index in (2, 3, 4)]
+        apart = frames.direction(local.frame, *offsets)
+        return min(
+            (frames.plus(here, apart), frames.minus(here, apart)),
+            key=lambda point: round(local.clear_of(point), 6),
+        )
 
     def _axes(self, placement: Any, frame: Frame) -> Axes:
         """Return the world directions of a condition's axes."""

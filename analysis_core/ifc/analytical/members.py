@@ -41,6 +41,12 @@ class Local:
         """Return how far a world point is from the line of the axis, m."""
         return frames.length(frames.cross(frames.minus(point, self.member.start), self.x))
 
+    def clear_of(self, point: Vector) -> float:
+        """Return how far a world point is from the nearest point of the member, m."""
+        along = self.position_of(point)
+        beyond = max(-along, along - self.length, 0.0)
+        return math.hypot(self.distance_to(point), beyond)
+
 
 class MemberReader:
     """Reads curve members; ``parts`` are the members of which a varying one is made."""
