@@ -309,6 +309,20 @@ def test_ifc2x3_sections_may_be_stated_by_values_alone(tmp_path: Path) -> None:
     assert (section.inertia_lateral, section.shear_area) == (1.336e-5, 1.3e-3)
 
 
+def test_the_first_of_several_profiles_is_taken_and_said(tmp_path: Path) -> None:
+    made = stick()
+    (usage,) = made.file.by_type("IfcMaterialProfileSetUsage")
+    whole = usage.ForProfileSet
+    deeper = made.create("IfcRectangleProfileDef", "AREA", "deep", None, 0.2, 0.8)
+    second = made.create("IfcMaterialProfile", None, None, None, deeper)
+    whole.MaterialProfiles = [*whole.MaterialProfiles, second]
+    building = read(made, tmp_path)
+    assert building.members[0].section.depth == pytest.approx(0.4)
+    found = finding(building, "material-choice")
+    assert (found.severity, found.elements) == ("warning", (made.by_name["M"].GlobalId,))
+    assert "of 2 profiles" in found.message
+
+
 def test_several_sections_along_an_ifc2x3_member_are_a_finding(tmp_path: Path) -> None:
     made = stick("IFC2X3")
     other = made.create("IfcGeneralProfileProperties", "other")

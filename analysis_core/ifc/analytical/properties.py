@@ -11,7 +11,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from typing import Any
 
-from analysis_core.findings import listed
+from analysis_core.findings import Finding, listed
 from analysis_core.ifc.analytical.notes import MALFORMED, Notes, global_id, is_kind
 from analysis_core.ifc.file_units import FileUnits
 from analysis_core.ifc.materials.choice import NO_CHOICE, Choice
@@ -68,6 +68,8 @@ class MemberProperties:
         key = global_id(entity)
         choice = self._choices.get(entity.id(), NO_CHOICE)
         result = Properties(material=self._material(choice.material, key), note=choice.note)
+        if choice.note:
+            self._users.setdefault(_choice_finding(choice.note), []).append(key)
         relations = self._profiles.get(entity.id(), ())
         if choice.profile is None and relations:
             return self._by_relation(entity, relations, result)
@@ -155,6 +157,15 @@ class MemberProperties:
             return result
         section = self._section(found[0][1], key)
         return replace(result, section=section or _section_of_properties(found[0], self._units))
+
+
+def _choice_finding(note: str) -> Finding:
+    return Finding(
+        "warning",
+        "material-choice",
+        f"What members are made of is stated more than once: {note}. State what holds in the job "
+        f"file (sections, materials) where that is wrong.",
+    )
 
 
 def _profile_relations(file: Any) -> dict[int, tuple[Any, ...]]:
