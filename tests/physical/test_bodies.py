@@ -358,6 +358,23 @@ def test_a_haunch_at_one_end_only_is_named(tmp_path):
     assert "varies along it" in text
 
 
+def test_a_haunch_that_runs_out_in_an_edge_leaves_the_beam_and_is_said(tmp_path):
+    # A beam 200 x 400, 6 m long; under its start a wedge 300 deep that runs out after 1 m.
+    maker = Maker()
+    beam = maker.extrusion(maker.rectangle(200.0, 400.0), 6000.0, maker.lying())
+    upright = maker.axes((0, 100, 0), (0, -1, 0), (1, 0, 0))
+    wedge = maker.polygon([(0, -200), (0, -500), (1000, -200)])
+    maker.element("IfcBeam", "B", [beam, maker.extrusion(wedge, 200.0, upright)])
+
+    building = maker.read(tmp_path)
+
+    (member,) = building.members
+    assert ends(member) == pytest.approx(np.array([[0, 0, 0], [6.0, 0, 0]]), abs=1e-9)
+    assert member.section.inertia == pytest.approx(0.2 * 0.4**3 / 12.0)
+    text = " ".join(f.message for f in building.findings if f.slug == "body-assumed")
+    assert "its body has 2 parts" in text
+
+
 def test_a_plate_girder_of_three_extrusions_is_one_section(tmp_path):
     # Flanges 200 x 20, web 10 x 360: the section of an I without fillets.
     maker = Maker()

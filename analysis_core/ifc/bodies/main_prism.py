@@ -17,6 +17,8 @@ from analysis_core.ifc.unreadable import UnreadableShapeError
 
 PARALLEL = math.cos(math.radians(2.0))
 _STEPS = 100
+# Parts beside the section taken that are worth a word, by volume: a short haunch is 4 %.
+_WORTH_SAYING = 0.02
 
 
 class CurvedMemberError(UnreadableShapeError):
@@ -61,7 +63,7 @@ def _largest(prisms: list[Prism]) -> tuple[Prism, list[str]]:
     if beside:
         main = joined_section(main, beside)
         remarks.append(f"its section is made of {1 + len(beside)} parts that run side by side")
-    if sum(volumes[id(p)] for p in rest) > 0.05 * used:
+    if sum(volumes[id(p)] for p in rest) > _WORTH_SAYING * used:
         remarks.append(
             f"its body has {len(prisms)} parts; the section is that of the largest, "
             f"{100.0 * used / sum(volumes.values()):.0f} % of the volume"

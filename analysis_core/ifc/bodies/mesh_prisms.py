@@ -233,7 +233,10 @@ def _tapered(prism: Prism, cuts: list[_Cut], ifc_class: str) -> Prism:
     loops = _carried_on(cuts[0].loops, cuts[-1].loops) if steady else None
     if loops is None:
         return prism._replace(remark="its section varies along it; that half-way was taken")
-    start, end = (profile_of("", ifc_class, recognise(part)) for part in loops)
+    try:
+        start, end = (profile_of("", ifc_class, recognise(part)) for part in loops)
+    except UnreadableShapeError:  # it runs out in a point or an edge, as a haunch does
+        return prism._replace(remark="its section varies along it; that half-way was taken")
     if not _same_kind(start.drawn, end.drawn):
         return prism._replace(remark="its section varies along it; that half-way was taken")
     return prism._replace(profile=start, end_profile=end)
