@@ -386,14 +386,18 @@ def test_an_element_in_two_containers_is_taken_once(tmp_path):
     assert "'Ground', 'First'" in finding(building, "two-containers").message
 
 
-def test_an_element_without_a_body_is_named(tmp_path):
+@pytest.mark.parametrize(
+    ("ifc_class", "severity"), [("IfcBeam", "error"), ("IfcMember", "warning")]
+)
+def test_an_element_without_a_body_is_named(tmp_path, ifc_class, severity):
+    """A beam that is missing from the analysis must not end in the status of full success."""
     maker = Maker()
-    element = maker.element("IfcBeam", "bare")
+    element = maker.element(ifc_class, "bare")
 
     building = maker.read(tmp_path)
 
     found = finding(building, "no-representation")
-    assert found.elements == (element.GlobalId,)
+    assert (found.severity, found.elements) == (severity, (element.GlobalId,))
     assert "it has no representation" in found.message
 
 

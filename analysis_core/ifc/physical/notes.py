@@ -106,7 +106,7 @@ class Notes:
         """Note a curved member."""
         self.add(
             Finding(
-                "warning",
+                _severity(record),
                 "curved-member",
                 f"{record.called} is curved ({reason}) and is not analysed; only straight members "
                 f"are. Draw it as straight pieces if that is near enough.",
@@ -117,7 +117,7 @@ class Notes:
     def no_shape(self, record: Record, reason: str) -> None:
         """Note an element whose place or body cannot be told."""
         self.group(
-            "warning",
+            _severity(record),
             "no-representation",
             f"left out, because no axis and no body could be read: {reason}",
             "Export them with their geometry.",
@@ -156,6 +156,11 @@ class Notes:
                 )
             )
         return result
+
+
+def _severity(record: Record) -> Severity:
+    """A beam that is not analysed is an error; a member may be a rail, a mullion or a brace."""
+    return "error" if record.ifc_class.startswith("IfcBeam") else "warning"
 
 
 def _count(items: list[tuple[str, str]]) -> str:
