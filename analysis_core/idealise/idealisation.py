@@ -31,6 +31,7 @@ from analysis_core.idealise.selectors import Chooser
 from analysis_core.idealise.self_weight import put_self_weight, weight_cases
 from analysis_core.idealise.standing_columns import let_columns_stand
 from analysis_core.idealise.temperature import put_temperature_actions
+from analysis_core.idealise.triangles import fault_triangles, let_lean, report_triangles
 from analysis_core.model import Action, Line, LineModel, Transfer
 from analysis_core.settings import Settings
 
@@ -63,6 +64,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         put_job_supports(scheme.drafts, settings, chooser, log)
         support_chains(physical, settings, log)
         meetings.let_carry(physical, table, settings.tolerances, log)
+        let_lean(scheme, settings.tolerances, log)
         explain_free_ends(physical, log)
         let_columns_stand(physical, settings.tolerances, log)
         if settings.analysis.spans == "face":
@@ -77,6 +79,9 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         analytical.let_carry(scheme, building, table, log)
     put_job_releases(scheme.drafts, settings, chooser, log)
     fault_fallen(scheme.drafts)
+    if building.route == "physical":
+        fault_triangles(scheme.drafts, settings.tolerances, log)
+    report_triangles(scheme.drafts, log)
     report_on_faulty(scheme, table, log)
 
     members = {member.global_id: member for member in building.members}

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 
 from analysis_core.findings import listed
@@ -62,13 +62,16 @@ def stiffness_at(draft: Draft, x: float, element: str, table: PropertyTable) -> 
     return rigidity / max(a, b, (max(ends) - min(ends)) / 2.0, 1e-3) ** 3
 
 
-def fault_fallen(drafts: Iterable[Draft]) -> None:
-    """Mark every draft that is held up by too little, counting the lines that carry it."""
-    drafts = list(drafts)
+def fallen_of(drafts: Sequence[Draft]) -> frozenset[int]:
+    """Return which drafts are held up by too little, counting the lines that carry them."""
     upright = standing([body_of(draft) for draft in drafts], ())
-    for draft in drafts:
-        if draft.mark not in upright:
-            _fault(draft)
+    return frozenset(n for n, draft in enumerate(drafts) if draft.mark not in upright)
+
+
+def fault_fallen(drafts: Sequence[Draft]) -> None:
+    """Mark every draft that is held up by too little, counting the lines that carry it."""
+    for number in sorted(fallen_of(drafts)):
+        _fault(drafts[number])
 
 
 def report_on_faulty(scheme: Scheme, table: PropertyTable, log: Log) -> None:
