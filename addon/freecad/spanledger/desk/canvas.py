@@ -6,18 +6,15 @@ from typing import Any
 
 from analysis_core.units import DisplayUnits, display_units
 
+from ..guard import guarded
 from ..present.drawing import Drawing, Spot
 from ..present.layout import lay_out, least_height
 from ..present.look import Palette, palette_for
 from ..present.strip import Strip, values_at
 from ..qt import Qt, QtCore, QtGui, QtWidgets, Signal
 from ..texts import tr, translate
+from .painting import colour_of, paint, paint_box, painting, smaller
 
-_ALIGN = {
-    "left": Qt.AlignmentFlag.AlignLeft,
-    "centre": Qt.AlignmentFlag.AlignHCenter,
-    "right": Qt.AlignmentFlag.AlignRight,
-}
 _STEP = 0.01
 _LEAST = (420, 240)
 
@@ -40,6 +37,7 @@ class Canvas(QtWidgets.QWidget):
         self.quantities: tuple[str, ...] = ("moment", "shear", "deflection")
         self.chosen: tuple[str, int] | None = None
         self.cursor: float | None = None
+        self._painted: tuple[Any, Any] | None = None
 
     def show_strip(
         self, strip: Strip | None, units: DisplayUnits, chosen: tuple[str, int] | None = None
@@ -78,18 +76,8 @@ class Canvas(QtWidgets.QWidget):
         self._lay_out()
 
     def paintEvent(self, _event: Any) -> None:  # noqa: N802
-        painter = QtGui.QPainter(self)
-        painter.setRenderHint(QtGui.QPainter.RenderHint.Antialiasing)
-        palette = self.palette_now()
-        painter.fillRect(self.rect(), _colour(palette, "ground"))
-        if self.drawing is None:
-            painter.setPen(_colour(palette, "faint"))
-            text = translate("Spanledger", "Choose a line in the list or in the 3D view.")
-            painter.drawText(self.rect(), Qt.AlignmentFlag.AlignCenter, text)
-        else:
-            _paint(painter, self.drawing, palette, self.font())
-            self._paint_cursor(painter, palette)
-        painter.end()
+        with painting(self) as painter:
+            guarded(lambda: self._paint(painter))
 
     def mouseMoveEvent(self, event: Any) -> None:  # noqa: N802
         place = _place(event)
@@ -136,89 +124,49 @@ class Canvas(QtWidgets.QWidget):
         if self.strip is None:
             self.drawing = None
         else:
-            metrics = QtGui.QFontMetricsF(_small(self.font()))
+            metrics = QtGui.QFontMetricsF(smaller(self.font()))
             advance = getattr(metrics, "horizontalAdvance", metrics.width)
             self.drawing = lay_out(
                 self.strip, self.width(), self.height(), self.units, measure=advance,
                 quantities=self.quantities, chosen=self.chosen,
             )  # fmt: skip
+        self._painted = None
         self.update()
+
+    def _paint(self, painter: Any) -> None:
+        palette = self.palette_now()
+        if self.drawing is None:
+            painter.fillRect(self.rect(), colour_of(palette, "ground"))
+            painter.setPen(colour_of(palette, "faint"))
+            text = translate("Spanledger", "Choose a line in the list or in the 3D view.")
+            painter.drawText(self.rect(), Qt.AlignmentFlag.AlignCenter, text)
+            return
+        painter.drawPixmap(0, 0, self._picture(self.drawing, palette))
+        self._paint_cursor(painter, palette)
+
+    def _picture(self, drawing: Drawing, palette: Palette) -> Any:
+        """Return the drawing as it was painted last, so that the cursor moves over it at once."""
+        looks = palette.name, self.font().toString(), self.devicePixelRatioF()
+        if self._painted is None or self._painted[0] != looks:
+            picture = QtGui.QPixmap(self.size() * self.devicePixelRatioF())
+            picture.setDevicePixelRatio(self.devicePixelRatioF())
+            picture.fill(colour_of(palette, "ground"))
+            with painting(picture) as painter:
+                paint(painter, drawing, palette, self.font())
+            self._painted = looks, picture
+        return self._painted[1]
 
     def _paint_cursor(self, painter: Any, palette: Palette) -> None:
         if self.cursor is None or self.strip is None or self.drawing is None:
             return
         x = self.drawing.to_pixel(self.cursor)
-        painter.setPen(QtGui.QPen(_colour(palette, "chosen"), 1.0, Qt.PenStyle.DashLine))
+        painter.setPen(QtGui.QPen(colour_of(palette, "chosen"), 1.0, Qt.PenStyle.DashLine))
         painter.drawLine(QtCore.QPointF(x, 0.0), QtCore.QPointF(x, float(self.height())))
         rows = [f"x = {self.units.text(self.cursor, 'length')}"]
         rows += [
             f"{tr(name)}: {words}" for name, words in values_at(self.strip, self.cursor, self.units)
         ]
-        _paint_box(painter, palette, rows, x, self.rect())
-
-
-def _paint(painter: Any, drawing: Drawing, palette: Palette, font: Any) -> None:
-    for fill in drawing.fills:
-        colour = _colour(palette, fill.role)
-        colour.setAlphaF(fill.opacity)
-        painter.setPen(Qt.PenStyle.NoPen)
-        painter.setBrush(colour)
-        polygon = QtGui.QPolygonF([QtCore.QPointF(x, y) for x, y in fill.points])
-        painter.drawPolygon(polygon)
-        if fill.hatched:
-            colour.setAlphaF(0.7)
-            painter.setBrush(QtGui.QBrush(colour, Qt.BrushStyle.BDiagPattern))
-            painter.drawPolygon(polygon)
-    painter.setBrush(Qt.BrushStyle.NoBrush)
-    for stroke in drawing.strokes:
-        style = Qt.PenStyle.DashLine if stroke.dashed else Qt.PenStyle.SolidLine
-        painter.setPen(QtGui.QPen(_colour(palette, stroke.role), stroke.width, style))
-        path = QtGui.QPainterPath()
-        for run in (stroke.points, *stroke.more):
-            path.moveTo(*run[0])
-            for x, y in run[1:]:
-                path.lineTo(x, y)
-        painter.drawPath(path)
-    for words in drawing.words:
-        chosen = _small(font) if words.small else QtGui.QFont(font)
-        chosen.setBold(words.bold)
-        painter.setFont(chosen)
-        left = {"left": words.x, "centre": words.x - 200.0, "right": words.x - 400.0}[words.align]
-        box = QtCore.QRectF(left, words.y - 10.0, 400.0, 20.0)
-        flags = int(_ALIGN[words.align] | Qt.AlignmentFlag.AlignVCenter)
-        halo = _colour(palette, "ground")
-        halo.setAlphaF(0.75)
-        painter.setPen(halo)  # a ground of their own keeps words readable over lines
-        for dx, dy in ((-1, 0), (1, 0), (0, -1), (0, 1)):
-            painter.drawText(box.translated(dx, dy), flags, words.text)
-        painter.setPen(_colour(palette, words.role))
-        painter.drawText(box, flags, words.text)
-
-
-def _paint_box(painter: Any, palette: Palette, rows: list[str], x: float, area: Any) -> None:
-    metrics = painter.fontMetrics()
-    width = max(metrics.boundingRect(row).width() for row in rows) + 16
-    line = metrics.height() + 1
-    height = line * len(rows) + 8
-    left = x + 8 if x + 8 + width < area.width() else x - 8 - width
-    box = QtCore.QRectF(left, 6, width, height)
-    painter.setPen(_colour(palette, "rule"))
-    painter.setBrush(_colour(palette, "ground"))
-    painter.drawRoundedRect(box, 4, 4)
-    painter.setPen(_colour(palette, "ink"))
-    for number, row in enumerate(rows):
-        painter.drawText(QtCore.QPointF(left + 8, 6 + line * (number + 1) - 1), row)
-
-
-def _colour(palette: Palette, role: str) -> Any:
-    return QtGui.QColor(*palette[role])
-
-
-def _small(font: Any) -> Any:
-    small = QtGui.QFont(font)
-    if font.pointSizeF() > 0:
-        small.setPointSizeF(0.9 * font.pointSizeF())
-    return small
+        paint_box(painter, palette, rows, x, self.rect())
 
 
 def _place(event: Any) -> Any:

@@ -416,9 +416,21 @@ class Inspector(QtWidgets.QScrollArea):
         self._layout.setContentsMargins(6, 2, 6, 6)
         if title:
             self._layout.addWidget(heading(title))
+        self._put_away(self.takeWidget())
         self.setWidget(body)
         for part in (body, self.viewport()):
             part.setAutoFillBackground(False)  # a dark style sheet's ground shows through
+
+    def _put_away(self, body: Any) -> None:
+        """Delete what was shown once the event is over that it may be in the midst of.
+
+        A button that leads to another line has this called from its own click; it must outlive
+        the click, and must not become a window of its own meanwhile.
+        """
+        if body is not None:
+            body.setParent(self)
+            body.hide()
+            body.deleteLater()
 
     def _facts(self, facts: list[tuple[str, str]]) -> None:
         label = facts_label("SpanledgerFacts")

@@ -8,6 +8,7 @@ from ..present.look import VIEW
 from ..present.shades import SOLID, Shade
 from ..qt import Qt, QtCore, QtGui, QtWidgets
 from ..texts import tr
+from .painting import painting
 
 
 class Legend(QtWidgets.QWidget):
@@ -16,12 +17,16 @@ class Legend(QtWidgets.QWidget):
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
         self.setObjectName("SpanledgerLegend")
+        self._shades: tuple[Shade, ...] = ()
         self._layout = QtWidgets.QHBoxLayout(self)
         self._layout.setContentsMargins(0, 0, 0, 0)
         self._layout.setSpacing(4)
 
     def show_shades(self, shades: tuple[Shade, ...]) -> None:
         """Show these classes."""
+        if shades == self._shades:
+            return
+        self._shades = shades
         while self._layout.count():
             self._layout.takeAt(0).widget().deleteLater()
         for shade in shades:
@@ -36,14 +41,13 @@ class Legend(QtWidgets.QWidget):
 def _sample(shade: Shade) -> Any:
     picture = QtGui.QPixmap(34, 14)
     picture.fill(QtGui.QColor(*VIEW["ground"]))
-    painter = QtGui.QPainter(picture)
     pen = QtGui.QPen(QtGui.QColor(*VIEW[shade.role]), shade.width)
     if shade.pattern != SOLID:
         pen.setDashPattern(_dashes(shade))
     pen.setCapStyle(Qt.PenCapStyle.FlatCap)
-    painter.setPen(pen)
-    painter.drawLine(QtCore.QPointF(2, 7), QtCore.QPointF(32, 7))
-    painter.end()
+    with painting(picture) as painter:
+        painter.setPen(pen)
+        painter.drawLine(QtCore.QPointF(2, 7), QtCore.QPointF(32, 7))
     return picture
 
 

@@ -92,4 +92,13 @@ def _look_at_all(doc: Any) -> None:
     view = gui.activeView() if gui else None
     if view is not None and hasattr(view, "viewIsometric"):
         view.viewIsometric()
-        QtCore.QTimer.singleShot(0, view.fitAll)  # once the docks have taken their room
+        name = doc.Name
+        QtCore.QTimer.singleShot(0, lambda: _fit(name))  # once the docks have taken their room
+
+
+def _fit(name: str) -> None:
+    """Look at all of a document; it may have been closed since, and its view be gone."""
+    gui = FreeCADGui.getDocument(name) if name in FreeCAD.listDocuments() else None
+    view = gui.activeView() if gui else None
+    if view is not None and hasattr(view, "fitAll"):
+        view.fitAll()

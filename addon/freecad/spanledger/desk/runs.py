@@ -7,6 +7,7 @@ from typing import Any
 
 import FreeCAD
 
+from ..collecting import CollectorPause
 from ..guard import guarded
 from ..qt import QtCore
 from ..texts import translate
@@ -20,6 +21,7 @@ class Runs(QtCore.QObject):
     def __init__(self, bar: RunningBar, tell: Callable[[str], None]) -> None:
         super().__init__()
         self._bar, self._tell = bar, tell
+        self._collector = CollectorPause()
         self._front: Work | None = None
         self._behind: Work | None = None
         bar.cancel_asked.connect(self.cancel)
@@ -32,7 +34,7 @@ class Runs(QtCore.QObject):
     @property
     def busy_behind(self) -> bool:
         """Whether something runs behind."""
-        return self._behind is not None and self._behind.isRunning()
+        return self._behind is not None
 
     def start(self, task: Callable[..., Any], done: Callable[[Any], None]) -> None:
         """Run ``task(progress)``; its result goes to ``done`` in the window's thread."""
@@ -46,10 +48,10 @@ class Runs(QtCore.QObject):
         work.cancelled.connect(
             lambda: self._tell(translate("Spanledger", "Stopped; nothing was changed."))
         )
-        work.finished.connect(self._finished)
+        work.finished.connect(self._front_finished)
         self._front = work
         self._bar.begin()
-        work.start()
+        self._start(work)
 
     def start_behind(self, task: Callable[..., Any], done: Callable[[Any], None]) -> None:
         """Run something that nobody waits for; a failure is only logged."""
@@ -58,7 +60,7 @@ class Runs(QtCore.QObject):
         work.succeeded.connect(lambda result: guarded(lambda: done(result)))
         work.failed.connect(lambda message: FreeCAD.Console.PrintLog(message + "\n"))
         self._behind = work
-        work.start()
+        self._start(work)
 
     def cancel(self) -> None:
         """Stop what runs in front at its next step."""
@@ -70,8 +72,18 @@ class Runs(QtCore.QObject):
         if self._behind is not None:
             self._behind.cancel()
 
-    def _finished(self) -> None:
+    def _start(self, work: Work) -> None:
+        work.finished.connect(lambda: self._ended(work))
+        self._collector.begin()
+        work.start()
+
+    def _ended(self, work: Work) -> None:
+        """A thread is over, in front or behind: let go of what it held."""
+        self._collector.end()
+        if self._behind is work:
+            self._behind = None
+        work.deleteLater()
+
+    def _front_finished(self) -> None:
         self._bar.end()
-        if self._front is not None:
-            self._front.deleteLater()
         self._front = None

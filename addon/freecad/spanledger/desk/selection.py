@@ -8,6 +8,8 @@ import FreeCAD
 import FreeCADGui
 
 from .. import document
+from ..guard import guarded
+from ..qt import QtCore
 
 
 class SelectionLink:
@@ -65,13 +67,23 @@ class SelectionLink:
         obj.ViewObject.Proxy.look_at(FreeCADGui.ActiveDocument.ActiveView, meant)
 
     def addSelection(self, doc: str, name: str, part: str, _point: Any) -> None:  # noqa: N802
-        """FreeCAD tells that something was selected."""
+        """FreeCAD tells that something was selected.
+
+        It tells so in the midst of going through the scene for a click; nodes may change only
+        once it is out of there.
+        """
         if self._busy or not part.startswith("Member"):
             return
         obj = FreeCAD.getDocument(doc).getObject(name)
-        if obj is not document.find_beam_lines(FreeCAD.getDocument(doc)):
-            return
-        line = obj.MemberLine[int(part.removeprefix("Member"))]
+        if obj is document.find_beam_lines(FreeCAD.getDocument(doc)):
+            line = obj.MemberLine[int(part.removeprefix("Member"))]
+            QtCore.QTimer.singleShot(0, lambda: guarded(lambda: self._follow(doc, name, line)))
+
+    def _follow(self, doc: str, name: str, line: int) -> None:
+        """Show the line that was selected in the 3D view."""
+        if doc not in FreeCAD.listDocuments():
+            return  # closed meanwhile
+        obj = FreeCAD.getDocument(doc).getObject(name)
         self._busy = True
         try:
             self.desk.choose_line(line)
