@@ -181,3 +181,19 @@ def test_a_line_without_actions_and_results_is_still_drawn(result):
 
     assert any(spot.kind == "joint" for spot in drawing.spots)
     assert any(words.text == "no action here" for words in drawing.words)
+
+
+def test_thinned_curves_keep_their_kinks_and_stay_within_a_sixth_of_a_pixel():
+    from freecad.spanledger.present.layout import _thinned
+
+    x = np.linspace(100.0, 430.0, 161)
+    parabola = 0.0022 * (x - 100.0) * (430.0 - x)
+    kinked = np.where(x < 217.0, 0.3 * (x - 100.0), 35.1 - 0.9 * (x - 217.0))
+    for y in (parabola, kinked, np.zeros(161)):
+        kept = np.array(_thinned(x, y))
+        assert len(kept) < 35
+        assert tuple(kept[0]) == (x[0], y[0])
+        assert tuple(kept[-1]) == (x[-1], y[-1])
+        assert np.abs(np.interp(x, *kept.T) - y).max() < 1.0 / 6.0
+    short = np.array(_thinned(x[:5], parabola[:5]))
+    assert len(short) == 5  # less than one block

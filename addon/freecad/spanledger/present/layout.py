@@ -33,6 +33,8 @@ DOWNWARD = {"moment": True, "shear": False, "deflection": True}
 ROW, BAND, BELOW_AXIS = 27.0, 74.0, 68.0
 """Least height of a row of actions and of a curve's band; what lies below the beam's axis."""
 
+BLOCK, SEEN, TINY = 8, 0.15, 1e-9
+
 Measure = Callable[[str], float]
 
 
@@ -262,11 +264,26 @@ def _runs(
     if breaks[-1] != len(values) - 1:
         breaks.append(len(values))
     px, py = drawing.origin + drawing.scale * x, base + scale * values
-    return [
-        tuple(zip(px[a + 1 : b].tolist(), py[a + 1 : b].tolist(), strict=True))
-        for a, b in pairwise(breaks)
-        if b - a > 2
-    ]
+    return [_thinned(px[a + 1 : b], py[a + 1 : b]) for a, b in pairwise(breaks) if b - a > 2]
+
+
+def _thinned(px: Floats, py: Floats) -> tuple[Place, ...]:
+    """Leave points out that lie within SEEN pixels of the chord over their BLOCK.
+
+    Most of a curve is nearly straight between stations; painting costs by the point.  A block
+    with a kink keeps all of its points.
+    """
+    keep = np.ones(len(py), dtype=bool)
+    whole = (len(py) - 1) // BLOCK * BLOCK
+    if whole:
+        x, y = px[:whole].reshape(-1, BLOCK), py[:whole].reshape(-1, BLOCK)
+        x_end, y_end = px[BLOCK : whole + 1 : BLOCK], py[BLOCK : whole + 1 : BLOCK]
+        along = x - x[:, :1]
+        run = np.maximum(x_end - x[:, 0], TINY)
+        off_chord = np.abs(y - y[:, :1] - along * ((y_end - y[:, 0]) / run)[:, None])
+        straight = off_chord.max(axis=1) <= SEEN
+        keep[:whole].reshape(-1, BLOCK)[straight, 1:] = False
+    return tuple(zip(px[keep].tolist(), py[keep].tolist(), strict=True))
 
 
 def _peaks(
