@@ -451,6 +451,36 @@ def test_several_models_are_read_together_with_a_note(tmp_path: Path) -> None:
     assert len(finding(read(made, tmp_path), "several-analysis-models").elements) == 2
 
 
+@pytest.mark.parametrize("schema", SCHEMAS)
+def test_items_outside_the_analysis_model_are_read_and_named(tmp_path: Path, schema: str) -> None:
+    made = AnalysisFile(continuous_beam([4.0, 5.0]), schema=schema)
+    (relation,) = [
+        r for r in made.file.by_type("IfcRelAssignsToGroup")
+        if r.RelatingGroup.is_a("IfcStructuralAnalysisModel")
+    ]  # fmt: skip
+    member = made.file.by_type("IfcStructuralCurveMember")[1]
+    relation.RelatedObjects = [o for o in relation.RelatedObjects if o != member]
+    building = read(made, tmp_path)
+
+    found = finding(building, "item-outside-models")
+    assert found.elements == (member.GlobalId,)
+    assert found.severity == "warning"
+    assert len(building.members) == 2
+
+
+def test_items_in_a_group_of_the_model_are_not_outside(tmp_path: Path) -> None:
+    made = AnalysisFile(continuous_beam([4.0, 5.0]), schema="IFC4")
+    (relation,) = [
+        r for r in made.file.by_type("IfcRelAssignsToGroup")
+        if r.RelatingGroup.is_a("IfcStructuralAnalysisModel")
+    ]  # fmt: skip
+    inner = made.rooted("IfcGroup", "Storey 1")
+    made.relate("IfcRelAssignsToGroup", "inner", list(relation.RelatedObjects), None, inner)
+    relation.RelatedObjects = [inner]
+
+    assert "item-outside-models" not in slugs(read(made, tmp_path))
+
+
 def test_members_without_a_model_are_read_with_a_note(tmp_path: Path) -> None:
     made = stick()
     for relation in made.file.by_type("IfcRelAssignsToGroup"):

@@ -20,6 +20,7 @@ from analysis_core.ifc.analytical.properties import MemberProperties
 from analysis_core.ifc.analytical.surfaces import SurfaceReader
 from analysis_core.ifc.analytical.targets import Target, chained
 from analysis_core.ifc.analytical.topology import Topology
+from analysis_core.ifc.analytical.unassigned import report_unassigned
 from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.geometry.frames import Frame
 from analysis_core.ifc.geometry.paths import Measures
@@ -96,6 +97,7 @@ class _Reader:
         placed = reader.read(actions, self._targets_of_actions(), cases_of)
         self._report_loose(actions, cases_of)
         self._report_models()
+        report_unassigned(self.file, self.models, self.notes)
         self.notes.extend(self.source.units.findings())
         return Building(
             route="analytical",
