@@ -165,6 +165,8 @@ def _take_out(source: str, target: Path) -> int:
         if report.path == "append"
         else "another program had rewritten the file; nothing else in it was changed"
     )
+    if report.packed_anew:
+        how += ". That is true of the model; the archive around it had to be packed anew"
     print(
         f"Taken out, into '{safe(str(target))}': {report.removed} property sets and what goes "
         f"with them; {how}.",

@@ -30,12 +30,14 @@ __all__ = ["PostReport", "RemoveReport", "post", "remove"]
 class RemoveReport:
     """What was taken out: the number of property sets.
 
-    ``path`` is "append" where our blocks were as we had written them: then the file is again, bit
-    for bit, what it was before posting.
+    ``path`` is "append" where our blocks were as we had written them: then the model is again, bit
+    for bit, what it was before posting.  So is the whole file, unless ``packed_anew``: the zip
+    archive around the model then had to be written anew.
     """
 
     removed: int
     path: Literal["append", "general"]
+    packed_anew: bool = False
 
 
 def post(
@@ -68,7 +70,8 @@ def post(
         guard = _Guard(source, target)
         stored = read_container(source)
         job.prepare(stored, source.name)
-        atomic.replace_file(target, stored.packed(job.parts()), before=guard.check)
+        content = stored.packed(job.parts(), way_back=True)
+        atomic.replace_file(target, content, before=guard.check)
     tell("Posting", 1.0)
     return job.report()
 
@@ -84,9 +87,9 @@ def remove(source_path: str | Path, target_path: str | Path) -> RemoveReport:
         guard = _Guard(source, target)
         stored = read_container(source)
         base, count, path = clearing.removed(stored.text)
-        content = stored.packed([base]) if base != stored.text else [stored.stored]
-        atomic.replace_file(target, content, before=guard.check)
-    return RemoveReport(count, path)
+        content, whole = stored.restored(base)
+        atomic.replace_file(target, [content], before=guard.check)
+    return RemoveReport(count, path, packed_anew=not whole)
 
 
 class _Guard:

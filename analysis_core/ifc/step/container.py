@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from analysis_core.errors import IfcReadError
+from analysis_core.ifc.step import archive
 
 _UTF16 = ((b"\xff\xfe", "utf-16-le"), (b"\xfe\xff", "utf-16-be"))
 
@@ -32,17 +33,44 @@ class Container:
         """SHA-256 of the file as it lies on the disk, in hexadecimal."""
         return hashlib.sha256(self.stored).hexdigest()
 
-    def packed(self, parts: Iterable[bytes | memoryview]) -> Iterable[bytes | memoryview]:
-        """Return the file with another text, given in parts, in the same wrapping."""
+    def packed(
+        self, parts: Iterable[bytes | memoryview], *, way_back: bool = False
+    ) -> Iterable[bytes | memoryview]:
+        """Return the file with another text, given in parts, in the same wrapping.
+
+        ``way_back``: so that ``restored`` can give back an archive as it is now.
+        """
         if not self.zipped and not self.encoding:
             return parts
         text = b"".join(parts)
         if text == self.text:
             return [self.stored]
-        if self.encoding:
-            mark = next(mark for mark, encoding in _UTF16 if encoding == self.encoding)
-            text = mark + text.decode("utf-8").encode(self.encoding)
-        return [_zipped_anew(self.stored, text)] if self.zipped else [text]
+        content = self._encoded(text)
+        if not self.zipped:
+            return [content]
+        return [archive.with_model(self.stored, content, way_back=way_back)]
+
+    def restored(self, text: bytes) -> tuple[bytes, bool]:
+        """Return the file with the text that it had before, and whether all of it is as it was.
+
+        Not so where an archive has been packed anew by another program, or by another release of
+        the packing library: then the text alone is as it was.
+        """
+        content = self._encoded(text)
+        if not self.zipped:
+            return content, True
+        old = archive.before(self.stored, content)
+        if old is not None:
+            return old, True
+        if text == self.text:
+            return self.stored, True
+        return archive.with_model(self.stored, content, way_back=False), False
+
+    def _encoded(self, text: bytes) -> bytes:
+        if not self.encoding:
+            return text
+        mark = next(mark for mark, encoding in _UTF16 if encoding == self.encoding)
+        return mark + text.decode("utf-8").encode(self.encoding)
 
 
 def read_container(path: Path) -> Container:
@@ -70,32 +98,14 @@ def read_container(path: Path) -> Container:
 
 def _unzipped(stored: bytes, name: str) -> bytes:
     try:
-        with zipfile.ZipFile(io.BytesIO(stored)) as archive:
-            return archive.read(_model_in(archive, name))
-    except IfcReadError:
-        raise
+        with zipfile.ZipFile(io.BytesIO(stored)) as opened:
+            models = archive.models_in(opened)
+            if len(models) == 1:
+                return opened.read(models[0])
     except Exception as error:  # a damaged archive raises whatever the damage leads to
         raise IfcReadError(
             f"'{name}' is a damaged or protected zip archive ({error}); copy or export it again."
         ) from None
-
-
-def _model_in(archive: zipfile.ZipFile, name: str) -> zipfile.ZipInfo:
-    models = [i for i in archive.infolist() if i.filename.lower().endswith(".ifc")]
-    if len(models) != 1:
-        raise IfcReadError(
-            f"'{name}' is a zip archive with {len(models)} .ifc files; one is needed. Unpack it."
-        )
-    return models[0]
-
-
-def _zipped_anew(stored: bytes, text: bytes) -> bytes:
-    """Return the archive with its model replaced; names, dates and other files stay."""
-    result = io.BytesIO()
-    with zipfile.ZipFile(io.BytesIO(stored)) as old, zipfile.ZipFile(result, "w") as new:
-        new.comment = old.comment
-        model = _model_in(old, "")
-        for info in old.infolist():
-            content = text if info.filename == model.filename else old.read(info)
-            new.writestr(info, content, compress_type=info.compress_type)
-    return result.getvalue()
+    raise IfcReadError(
+        f"'{name}' is a zip archive with {len(models)} .ifc files; one is needed. Unpack it."
+    )

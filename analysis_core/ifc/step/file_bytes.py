@@ -12,6 +12,7 @@ from pathlib import Path
 
 from analysis_core.errors import IfcReadError
 from analysis_core.findings import Finding
+from analysis_core.ifc.step.archive import models_in
 
 # A zip of a few kilobytes can unpack to anything; no model is as large as this.
 LARGEST_MODEL = 4_000_000_000
@@ -90,7 +91,7 @@ def _unzipped(data: bytes, name: str) -> bytes:
 
 def _model_in(archive: zipfile.ZipFile, name: str) -> zipfile.ZipInfo:
     files = [info for info in archive.infolist() if not info.is_dir()]
-    models = [info for info in files if info.filename.lower().endswith(".ifc")]
+    models = models_in(archive)
     if not models:
         held = ", ".join(f"'{info.filename}'" for info in files[:3]) or "nothing"
         raise IfcReadError(
