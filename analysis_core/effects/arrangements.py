@@ -12,13 +12,15 @@ from __future__ import annotations
 
 import itertools
 from collections.abc import Collection, Mapping, Sequence
-from dataclasses import dataclass, field, replace
-from typing import Literal
+from copy import copy
+from dataclasses import dataclass, field, fields
+from operator import attrgetter, is_
+from typing import Literal, get_args
 
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.model import Action, JointForce, JointMovement, Line
+from analysis_core.model import Action, JointAction, JointForce, JointMovement, Line, MemberAction
 from analysis_core.results import LineSolution
 
 Floats = NDArray[np.float64]
@@ -30,6 +32,16 @@ PATTERNS: Mapping[str, str] = {
     "exterior": "one exterior span loaded",
     "but-exterior": "all spans but one exterior span loaded",
 }
+
+# All values of an action but its case, which comes first.
+_ALL_BUT_CASE = {
+    kind: attrgetter(*[f.name for f in fields(kind)][1:])
+    for kind in get_args(MemberAction | JointAction)
+}
+_SUPERPOSED = (
+    "end_moments", "end_shears", "axial", "rotations", "end_rotations", "displacements",
+    "reactions",
+)  # fmt: skip
 
 
 @dataclass(frozen=True, slots=True)
@@ -101,24 +113,81 @@ def split_by_span(
     is already one of a part, as reactions handed down from a line that was itself split; parts
     at the same place of different lines are told apart by their place.
     """
-    known = known or {}
-    wanted, by_span = set(cases), set(split)
-    found: dict[str, dict[str, Part]] = {case: {} for case in cases}
-    actions = []
-    for action in line.actions:
-        part = known.get(action.case)
-        case = part.case if part else action.case
-        if case not in wanted:
-            continue
+    return SpanSplitter(cases, split, known=known).split(line)
+
+
+class SpanSplitter:
+    """Splits many lines as ``split_by_span`` does; lines with equal parts share one tuple of them.
+
+    What follows from parts alone need then be found once.  ``known`` may grow in the meantime.
+    """
+
+    def __init__(
+        self,
+        cases: Sequence[str],
+        split: Collection[str],
+        *,
+        known: Mapping[str, Part] | None = None,
+    ) -> None:
+        self._whole = {case: Part(case, case) for case in cases}
+        self._split = frozenset(split)
+        self._known = {} if known is None else known
+        self._on_span: dict[tuple[str, int], Part] = {}
+        self._shared: dict[tuple[Part, ...], tuple[Part, ...]] = {}
+
+    def split(self, line: Line) -> SpanCases:
+        """Return one line with its parts."""
+        found: dict[str, dict[str, Part]] = {case: {} for case in self._whole}
+        actions = []
+        for action in line.actions:
+            part = self._part(line, action)
+            if part is not None:
+                found[part.case].setdefault(part.name, part)
+                actions.append(recased(action, part.name))
+        parts: list[Part] = []
+        for case, own in found.items():
+            parts += sorted(own.values(), key=_along) if own else [self._whole[case]]
+        shared = tuple(parts)
+        return SpanCases(
+            with_recased(line, tuple(actions)), self._shared.setdefault(shared, shared)
+        )
+
+    def _part(self, line: Line, action: Action) -> Part | None:
+        """The part that an action belongs to, None where its case is not wanted."""
+        case = action.case
+        known = self._known.get(case)
+        if known is not None:
+            return known if known.case in self._whole else None
+        if case not in self._split:
+            return self._whole.get(case)
+        if case not in self._whole:
+            return None
+        if isinstance(action, JointForce | JointMovement):
+            return _part(line, action)
+        span = line.members[action.member].span
+        if span is None:
+            return _part(line, action)
+        part = self._on_span.get((case, span))
         if part is None:
-            part = _part(line, action) if case in by_span else Part(case, case)
-        found[case].setdefault(part.name, part)
-        actions.append(replace(action, case=part.name))
-    parts: list[Part] = []
-    for case in cases:
-        own = found[case] or {case: Part(case, case)}
-        parts += sorted(own.values(), key=lambda p: (p.span is None, p.span or 0, p.place))
-    return SpanCases(replace(line, actions=tuple(actions)), tuple(parts))
+            part = self._on_span[case, span] = _part(line, action)
+        return part
+
+
+def recased(action: Action, case: str) -> Action:
+    """Return the action in another case."""
+    if action.case == case:
+        return action
+    kind = type(action)
+    return kind(case, *_ALL_BUT_CASE[kind](action))
+
+
+def with_recased(line: Line, actions: tuple[Action, ...]) -> Line:
+    """Return the line with its own ``actions`` in other cases, which need not be checked again."""
+    if all(map(is_, actions, line.actions)) and len(actions) == len(line.actions):
+        return line
+    changed = copy(line)
+    object.__setattr__(changed, "actions", actions)
+    return changed
 
 
 def whole_cases(line: Line, cases: Sequence[str]) -> SpanCases:
@@ -130,28 +199,51 @@ def merged(
     spans: SpanCases, solution: LineSolution, cases: Sequence[str], line: Line
 ) -> LineSolution:
     """Return the solution of the whole ``cases`` of ``line`` from that of their parts."""
-    rows = [[solution.cases.index(p.name) for p in spans.parts if p.case == c] for c in cases]
+    (whole,) = merged_lines([spans], [solution], cases, [line])
+    return whole
 
-    def total(values: Floats) -> Floats:
-        out = np.zeros((len(rows), *values.shape[1:]))
-        for into, row in zip(out, rows, strict=True):
-            for index in row:
-                into += values[index]
-        out.flags.writeable = False
-        return out
 
-    return replace(
-        solution,
-        line=line,
-        cases=tuple(cases),
-        end_moments=total(solution.end_moments),
-        end_shears=total(solution.end_shears),
-        axial=total(solution.axial),
-        rotations=total(solution.rotations),
-        end_rotations=total(solution.end_rotations),
-        displacements=total(solution.displacements),
-        reactions=total(solution.reactions),
-    )
+def merged_lines(
+    spans: Sequence[SpanCases],
+    solutions: Sequence[LineSolution],
+    cases: Sequence[str],
+    lines: Sequence[Line],
+) -> list[LineSolution]:
+    """Return ``merged`` of each line; those alike are added up together."""
+    out: list[LineSolution | None] = [None] * len(spans)
+    alike: dict[tuple[object, ...], list[int]] = {}
+    for i, (split, solution) in enumerate(zip(spans, solutions, strict=True)):
+        # Lines that share their parts refer to the same tuple: see SpanSplitter.
+        key = id(split.parts), solution.cases, solution.end_moments.shape, solution.rotations.shape
+        alike.setdefault(key, []).append(i)
+    for chosen in alike.values():
+        first, parts = solutions[chosen[0]], spans[chosen[0]].parts
+        rows = [[first.cases.index(p.name) for p in parts if p.case == c] for c in cases]
+        totals = [
+            _totals([getattr(solutions[i], name) for i in chosen], rows) for name in _SUPERPOSED
+        ]
+        for i, *arrays in zip(chosen, *totals, strict=True):
+            given = solutions[i]
+            out[i] = LineSolution(
+                line=lines[i],
+                cases=tuple(cases),
+                joint_residual=given.joint_residual,
+                continuity_residual=given.continuity_residual,
+                method=given.method,
+                **dict(zip(_SUPERPOSED, arrays, strict=True)),
+            )
+    return [whole for whole in out if whole is not None]
+
+
+def _totals(values: Sequence[Floats], rows: Sequence[Sequence[int]]) -> Floats:
+    """The sums over the parts in each of the rows, of every line (L, parts, ...), read-only."""
+    every = np.stack(values)
+    out = np.zeros((len(every), len(rows), *every.shape[2:]))
+    for case, row in enumerate(rows):
+        for index in row:
+            out[:, case] += every[:, index]
+    out.flags.writeable = False
+    return out
 
 
 def loaded_spans(pattern: Pattern, spans: Sequence[int]) -> list[tuple[int, ...]]:
@@ -166,6 +258,11 @@ def loaded_spans(pattern: Pattern, spans: Sequence[int]) -> list[tuple[int, ...]
     if pattern == "exterior":
         return [spans[:1], spans[-1:]]
     return [spans[1:], spans[:-1]]
+
+
+def _along(part: Part) -> tuple[bool, int, str]:
+    """Parts of a case stand in the order of the spans."""
+    return part.span is None, part.span or 0, part.place
 
 
 def _part(line: Line, action: Action) -> Part:

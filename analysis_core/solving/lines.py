@@ -18,9 +18,11 @@ from analysis_core.effects.arrangements import (
     Arrangements,
     Part,
     SpanCases,
-    merged,
-    split_by_span,
+    SpanSplitter,
+    merged_lines,
+    recased,
     whole_cases,
+    with_recased,
 )
 from analysis_core.effects.combinations import combine
 from analysis_core.effects.envelopes import envelopes
@@ -118,6 +120,7 @@ class _Solver:
         if memory is not None:
             memory.again.clear()
         self._known: dict[str, Part] = {}
+        self._splitter = SpanSplitter(self.cases, rules.arrangements.split, known=self._known)
         self._into: dict[str, list[Transfer]] = {}
         for transfer in model.transfers:
             self._into.setdefault(transfer.to_line, []).append(transfer)
@@ -176,9 +179,10 @@ class _Solver:
         )  # fmt: skip
 
     def _solve(self, lines: Sequence[Line]) -> None:
-        split = [self._split(line) for line in lines]
+        split = [self._splitter.split(line) for line in lines]
         known = [self.kept(spans) for spans in split]
         new = iter(_solve_parts([s for s, k in zip(split, known, strict=True) if k is None]))
+        solved: list[tuple[Line, SpanCases, LineSolution]] = []
         for line, spans, kept in zip(lines, split, known, strict=True):
             solution = next(new) if kept is None else replace(kept.parts, line=spans.line)
             if kept is None and self.memory is not None:
@@ -186,7 +190,9 @@ class _Solver:
             if isinstance(solution, AnalysisError):
                 self._refuse(line, solution)
             else:
-                self._keep(line, spans, solution)
+                solved.append((self._whole_cases(line), spans, solution))
+        if solved:
+            self._keep(*zip(*solved, strict=True))
 
     def key(self, spans: SpanCases) -> Hashable:
         """Everything that the results of a line depend on, and nothing else."""
@@ -203,18 +209,23 @@ class _Solver:
         """Return what the memory has of an equal line."""
         return self.memory.kept.get(self.key(spans)) if self.memory is not None else None
 
-    def _split(self, line: Line) -> SpanCases:
-        split = self.rules.arrangements.split
-        return split_by_span(line, self.cases, split, known=self._known)
-
-    def _keep(self, line: Line, spans: SpanCases, solution: LineSolution) -> None:
-        actions = tuple(
-            replace(a, case=self._known[a.case].case) if a.case in self._known else a
+    def _whole_cases(self, line: Line) -> Line:
+        """The line with what was handed down to it in the cases that it belongs to."""
+        actions = (
+            recased(a, self._known[a.case].case) if a.case in self._known else a
             for a in line.actions
         )
-        whole_line = replace(line, actions=actions)
-        whole = merged(spans, solution, self.cases, whole_line)
-        self.solved[line.mark] = _Solved(whole_line, spans, solution, whole)
+        return with_recased(line, tuple(actions))
+
+    def _keep(
+        self,
+        lines: Sequence[Line],
+        split: Sequence[SpanCases],
+        solutions: Sequence[LineSolution],
+    ) -> None:
+        whole = merged_lines(split, solutions, self.cases, lines)
+        for found in map(_Solved, lines, split, solutions, whole):
+            self.solved[found.line.mark] = found
 
     def _solve_circle(self, group: Sequence[str]) -> None:
         """Solve lines that bear on each other.
@@ -229,7 +240,7 @@ class _Solver:
             for line in lines:
                 self._refuse_broken(line, next(t for t in inner if t.to_line == line.mark))
             return
-        split = [self._split(line) for line in lines]
+        split = [self._splitter.split(line) for line in lines]
         parts = _solve_parts(split)
         units = _solve_parts([_unit_forces(line, inner) for line in lines])
         failed = [s for s in (*parts, *units) if isinstance(s, AnalysisError)]
