@@ -5,8 +5,9 @@ Arrays have the case first.  They are marked read-only when they leave the solve
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
+from typing import TypeVar, overload
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,6 +16,7 @@ from analysis_core.findings import Finding
 from analysis_core.model import Line, LineModel
 
 Floats = NDArray[np.float64]
+Item = TypeVar("Item", covariant=True)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -105,8 +107,113 @@ class LineEnvelope:
     """Governing effects of one line for one limit state."""
 
     limit_state: str
-    members: tuple[MemberEnvelope, ...]
-    reactions: tuple[ReactionEnvelope, ...]
+    members: Sequence[MemberEnvelope]
+    reactions: Sequence[ReactionEnvelope]
+
+
+class OnRequest(Sequence[Item]):
+    """``count`` items, the first of which is number ``first`` of what ``make`` makes.
+
+    Lines are treated by the thousand; what few ask for is made when it is asked for, anew each
+    time.
+    """
+
+    __slots__ = ("_make", "_numbers")
+
+    def __init__(self, make: Callable[[int], Item], count: int, first: int = 0) -> None:
+        self._make = make
+        self._numbers = range(first, first + count)
+
+    def __len__(self) -> int:
+        return len(self._numbers)
+
+    @overload
+    def __getitem__(self, index: int) -> Item: ...
+
+    @overload
+    def __getitem__(self, index: slice) -> Sequence[Item]: ...
+
+    def __getitem__(self, index: int | slice) -> Item | Sequence[Item]:
+        if isinstance(index, slice):
+            return tuple(map(self._make, self._numbers[index]))
+        return self._make(self._numbers[index])
+
+    def __iter__(self) -> Iterator[Item]:
+        return map(self._make, self._numbers)
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Extremes:
+    """B extremes: value, x (B), and the words for each."""
+
+    value: Floats
+    x: Floats
+    source: Sequence[str]
+
+    def __len__(self) -> int:
+        return len(self.value)
+
+    def __getitem__(self, b: int) -> Extreme:
+        return Extreme(float(self.value[b]), float(self.x[b]), self.source[b])
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class EffectEnvelope:
+    """One effect of B members: extremes, and the envelope at N stations, top and bottom (B, N)."""
+
+    highest: Extremes
+    lowest: Extremes
+    top: Floats
+    bottom: Floats
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class MemberEnvelopes:
+    """Envelopes of B members of many lines: member (B) its number in its line, x (B, N) m."""
+
+    member: NDArray[np.int64]
+    x: Floats
+    moment: EffectEnvelope
+    shear: EffectEnvelope
+    deflection: EffectEnvelope
+
+    def __getitem__(self, b: int) -> MemberEnvelope:
+        moment, shear, deflection = self.moment, self.shear, self.deflection
+        top, bottom = moment.top[b], moment.bottom[b]
+        return MemberEnvelope(
+            member=int(self.member[b]),
+            sagging=moment.highest[b],
+            hogging=moment.lowest[b],
+            shear_max=shear.highest[b],
+            shear_min=shear.lowest[b],
+            deflection_down=deflection.highest[b],
+            deflection_up=deflection.lowest[b],
+            start_moment=(float(bottom[0]), float(top[0])),
+            end_moment=(float(bottom[-1]), float(top[-1])),
+            x=self.x[b],
+            moment_max=top,
+            moment_min=bottom,
+            shear_max_at=shear.top[b],
+            shear_min_at=shear.bottom[b],
+            deflection_max=deflection.top[b],
+            deflection_min=deflection.bottom[b],
+        )
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class ReactionEnvelopes:
+    """Governing reactions at S supports of many lines: joint (S) its number in its line.
+
+    ``highest``, ``lowest``: three extremes of each support, vertical, horizontal, moment (3 * S).
+    """
+
+    joint: NDArray[np.int64]
+    highest: Extremes
+    lowest: Extremes
+
+    def __getitem__(self, s: int) -> ReactionEnvelope:
+        both = (each[3 * s + i] for i in range(3) for each in (self.highest, self.lowest))
+        return ReactionEnvelope(int(self.joint[s]), *both)
 
 
 @dataclass(frozen=True, slots=True, eq=False)

@@ -2,28 +2,35 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from dataclasses import dataclass, replace
+import itertools
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import replace
+from functools import partial
 
 import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.arrangements import Arrangements, Part, SpanCases
-from analysis_core.effects.extremes import Peaks, together
+from analysis_core.effects.extremes import Peaks
 from analysis_core.effects.factors import FactorTable, factor_table
 from analysis_core.effects.fields import fields
 from analysis_core.effects.sampling import both
 from analysis_core.effects.sweep import Swept, sweep
 from analysis_core.model import Combination, Line
 from analysis_core.results import (
-    Extreme,
+    EffectEnvelope,
+    Extremes,
     LineEnvelope,
     LineSolution,
     MemberEnvelope,
+    MemberEnvelopes,
+    OnRequest,
     ReactionEnvelope,
+    ReactionEnvelopes,
 )
 
 Floats = NDArray[np.float64]
+Integers = NDArray[np.int64]
 
 
 def envelope(
@@ -65,16 +72,36 @@ def envelopes(
     chosen = [c for c in combinations if c.limit_state == limit_state]
     if not chosen:
         raise ValueError(f"no combination is of the limit state '{limit_state}'")
-    arrangements = arrangements or Arrangements()
-    out: list[LineEnvelope | None] = [None] * len(lines)
-    for table, members in tables(lines, chosen, arrangements):
+    found = envelopes_by_state(lines, solutions, chosen, arrangements=arrangements, count=count)
+    return [states[limit_state] for states in found]
+
+
+def envelopes_by_state(
+    lines: Sequence[SpanCases],
+    solutions: Sequence[LineSolution],
+    combinations: Sequence[Combination],
+    *,
+    arrangements: Arrangements | None = None,
+    count: int = 21,
+) -> list[dict[str, LineEnvelope]]:
+    """Return ``envelopes`` of each line for every limit state that the combinations are of."""
+    by_state: dict[str, list[Combination]] = {}
+    for combination in combinations:
+        by_state.setdefault(combination.limit_state, []).append(combination)
+    out: list[dict[str, LineEnvelope]] = [{} for _ in lines]
+    for members in _alike(lines, arrangements or Arrangements()):
         batch = [lines[i] for i in members]
         ordered = [in_order(solutions[i], lines[i].cases) for i in members]
-        by_member = _member_envelopes(batch, ordered, table, count)
-        by_joint = _reactions(batch, ordered, table)
-        for i, found, reactions in zip(members, by_member, by_joint, strict=True):
-            out[i] = LineEnvelope(limit_state, found, reactions)
-    return [envelope for envelope in out if envelope is not None]
+        tables = {
+            state: _table(chosen, batch[0], arrangements or Arrangements())
+            for state, chosen in by_state.items()
+        }
+        by_member = _member_envelopes(batch, ordered, tables, count)
+        for state, table in tables.items():
+            by_joint = _reactions(batch, ordered, table)
+            for i, found, reactions in zip(members, by_member[state], by_joint, strict=True):
+                out[i][state] = LineEnvelope(state, found, reactions)
+    return out
 
 
 def span_numbers(line: Line) -> tuple[int, ...]:
@@ -86,16 +113,32 @@ def tables(
     lines: Sequence[SpanCases], combinations: Sequence[Combination], arrangements: Arrangements
 ) -> list[tuple[FactorTable, list[int]]]:
     """Return each table of factors with the numbers of the lines that it serves."""
-    out: dict[object, tuple[FactorTable, list[int]]] = {}
+    return [
+        (_table(combinations, lines[members[0]], arrangements), members)
+        for members in _alike(lines, arrangements)
+    ]
+
+
+def _alike(lines: Sequence[SpanCases], arrangements: Arrangements) -> list[list[int]]:
+    """Numbers of the lines that one table of factors serves, whatever the combinations."""
+    kinds: dict[int, tuple[object, ...]] = {}  # many lines share one tuple of parts
+    out: dict[object, list[int]] = {}
     for i, line in enumerate(lines):
+        parts = line.parts
+        kind = kinds.get(id(parts))
+        if kind is None:
+            spans = tuple(p.span for p in parts) if arrangements.listed else ()
+            kind = kinds[id(parts)] = (spans, tuple((p.case, bool(p.place)) for p in parts))
         numbers = span_numbers(line.line) if arrangements.listed else ()
-        spans = [p.span for p in line.parts] if arrangements.listed else ()
-        key = (numbers, tuple(spans), tuple((p.case, bool(p.place)) for p in line.parts))
-        if key not in out:
-            table = factor_table(combinations, line.parts, arrangements, numbers)
-            out[key] = table, []
-        out[key][1].append(i)
+        out.setdefault((numbers, kind), []).append(i)
     return list(out.values())
+
+
+def _table(
+    combinations: Sequence[Combination], line: SpanCases, arrangements: Arrangements
+) -> FactorTable:
+    numbers = span_numbers(line.line) if arrangements.listed else ()
+    return factor_table(combinations, line.parts, arrangements, numbers)
 
 
 def in_order(solution: LineSolution, cases: Sequence[str]) -> LineSolution:
@@ -119,53 +162,57 @@ def in_order(solution: LineSolution, cases: Sequence[str]) -> LineSolution:
     )
 
 
-@dataclass(frozen=True, slots=True, eq=False)
-class _Named:
-    """One effect of a block: envelope at the stations (B, G) and the extremes both ways."""
-
-    top: Floats
-    bottom: Floats
-    highest: list[Extreme]
-    lowest: list[Extreme]
-
-
 def _member_envelopes(
     batch: Sequence[SpanCases],
     solutions: Sequence[LineSolution],
-    table: FactorTable,
+    tables: Mapping[str, FactorTable],
     count: int,
-) -> list[tuple[MemberEnvelope, ...]]:
+) -> dict[str, list[OnRequest[MemberEnvelope]]]:
+    """The envelopes of the members of each line by limit state."""
     lines = [spans.line for spans in batch]
-    out: list[list[MemberEnvelope | None]] = [[None] * len(line.members) for line in lines]
-    for block in fields(lines, solutions):
-        swept = sweep(block, table, count)
-        of_lines = block.line.tolist()
-        parts = [batch[i].parts for i in of_lines]
-        effects = (swept.moment, swept.shear, swept.deflection)
-        moment, shear, deflection = _named(effects, table, parts)
-        places = _settled(np.linspace(0.0, 1.0, count)[:, None] * block.length)
-        numbers = zip(of_lines, block.member.tolist(), strict=True)
-        for b, (i, m) in enumerate(numbers):
-            out[i][m] = _member(m, b, places[b], moment, shear, deflection)
-    return [tuple(m for m in members if m is not None) for members in out]
+    first = np.cumsum([0, *(len(line.members) for line in lines)])
+    # Of every member of all lines in order: its block, and its number in that.
+    where = np.empty((first[-1], 2), dtype=np.int64)
+    found: dict[str, list[MemberEnvelopes]] = {state: [] for state in tables}
+    for number, block in enumerate(fields(lines, solutions)):
+        size = len(block.line)
+        where[first[block.line] + block.member] = np.column_stack(
+            [np.full(size, number), np.arange(size)]
+        )
+        parts = [batch[i].parts for i in block.line.tolist()]
+        x = _settled(np.linspace(0.0, 1.0, count)[:, None] * block.length)
+        for state, table in tables.items():
+            swept = sweep(block, table, count)
+            effects = _named((swept.moment, swept.shear, swept.deflection), table, parts)
+            found[state].append(MemberEnvelopes(block.member, x, *effects))
+    places = where.tolist()
+    return {
+        state: [
+            OnRequest(partial(_member, blocks, places), len(line.members), low)
+            for line, low in zip(lines, first.tolist(), strict=False)
+        ]
+        for state, blocks in found.items()
+    }
+
+
+def _member(
+    blocks: Sequence[MemberEnvelopes], places: Sequence[tuple[int, int]], number: int
+) -> MemberEnvelope:
+    block, b = places[number]
+    return blocks[block][b]
 
 
 def _named(
     effects: Sequence[Swept], table: FactorTable, parts: Sequence[tuple[Part, ...]]
-) -> list[_Named]:
-    """Effects of the same members, their extremes named together."""
-    every = [own for _ in effects for own in parts]
-    highest = named_extremes(together([e.highest for e in effects]), table, every, largest=True)
-    lowest = named_extremes(together([e.lowest for e in effects]), table, every, largest=False)
-    size = len(parts)
+) -> list[EffectEnvelope]:
     return [
-        _Named(
+        EffectEnvelope(
+            highest=named_extremes(effect.highest, table, parts, largest=True),
+            lowest=named_extremes(effect.lowest, table, parts, largest=False),
             top=_settled(effect.top),
             bottom=_settled(effect.bottom),
-            highest=highest[i * size : (i + 1) * size],
-            lowest=lowest[i * size : (i + 1) * size],
         )
-        for i, effect in enumerate(effects)
+        for effect in effects
     ]
 
 
@@ -176,72 +223,53 @@ def _settled(values: Floats) -> Floats:
     return out
 
 
-def _member(
-    number: int, b: int, x: Floats, moment: _Named, shear: _Named, deflection: _Named
-) -> MemberEnvelope:
-    tops, bottoms = moment.top[b], moment.bottom[b]
-    return MemberEnvelope(
-        member=number,
-        sagging=moment.highest[b],
-        hogging=moment.lowest[b],
-        shear_max=shear.highest[b],
-        shear_min=shear.lowest[b],
-        deflection_down=deflection.highest[b],
-        deflection_up=deflection.lowest[b],
-        start_moment=(float(bottoms[0]), float(tops[0])),
-        end_moment=(float(bottoms[-1]), float(tops[-1])),
-        x=x,
-        moment_max=tops,
-        moment_min=bottoms,
-        shear_max_at=shear.top[b],
-        shear_min_at=shear.bottom[b],
-        deflection_max=deflection.top[b],
-        deflection_min=deflection.bottom[b],
-    )
-
-
 def named_extremes(
     peaks: Peaks, table: FactorTable, parts: Sequence[tuple[Part, ...]], *, largest: bool
-) -> list[Extreme]:
+) -> Extremes:
     """Return the extremes of B members; ``parts`` are those of the line that each belongs to."""
     sources = table.sources(peaks.row, peaks.contributions, parts, largest=largest)
-    return list(map(Extreme, peaks.value.tolist(), peaks.x.tolist(), sources))
+    return Extremes(peaks.value, peaks.x, sources)
 
 
 def _reactions(
     batch: Sequence[SpanCases], solutions: Sequence[LineSolution], table: FactorTable
-) -> list[tuple[ReactionEnvelope, ...]]:
+) -> list[OnRequest[ReactionEnvelope]]:
     values = np.concatenate([s.reactions for s in solutions], axis=1)
-    joints = [(joint, spans.parts) for spans in batch for joint in spans.line.joints]
-    chosen = [j for j, (joint, _) in enumerate(joints) if joint.support is not None]
-    flat = values[:, chosen][..., [1, 0, 2]].reshape(len(values), -1)  # (C, joints * 3)
-    x = np.repeat([joints[j][0].x for j in chosen], 3)
-    parts = [joints[j][1] for j in chosen for _ in range(3)]
-    high, low = both(flat[None], table)
-    acting = np.flatnonzero(flat.any(axis=0))
-    none = Extreme(0.0)
-    extremes = []
-    for rows, pick in ((high[0], np.argmax), (low[0], np.argmin)):
-        row = pick(rows, axis=0)
-        found = np.take_along_axis(rows, row[None], 0)[0]
-        peaks = Peaks(found[acting], x[acting], row[acting], flat[:, acting])
-        own = [parts[i] for i in acting.tolist()]
-        named = [none] * len(parts)
-        for i, extreme in zip(
-            acting.tolist(),
-            named_extremes(peaks, table, own, largest=pick is np.argmax),
-            strict=True,
-        ):
-            named[i] = extreme
-        extremes.append(named)
-    top, bottom = extremes
-    made = iter(
-        ReactionEnvelope(
-            joints[j][0].id, *(e for d in range(3) for e in (top[3 * i + d], bottom[3 * i + d]))
-        )
-        for i, j in enumerate(chosen)
-    )
-    return [
-        tuple(next(made) for joint in spans.line.joints if joint.support is not None)
-        for spans in batch
+    supported = [[j for j in spans.line.joints if j.support is not None] for spans in batch]
+    first = np.cumsum([0, *(len(spans.line.joints) for spans in batch)]).tolist()
+    chosen = [low + j.id for low, own in zip(first, supported, strict=False) for j in own]
+    flat = values[:, chosen][..., [1, 0, 2]].reshape(len(values), -1)  # (C, supports * 3)
+    x = np.repeat([j.x for own in supported for j in own], 3)
+    parts = [
+        spans.parts
+        for spans, own in zip(batch, supported, strict=True)
+        for _ in range(3 * len(own))
     ]
+    high, low = both(flat[None], table)
+    found = ReactionEnvelopes(
+        np.array([j.id for own in supported for j in own], dtype=np.int64),
+        _where_acting(high[0], np.argmax, flat, x, table, parts),
+        _where_acting(low[0], np.argmin, flat, x, table, parts),
+    )
+    counts = [len(own) for own in supported]
+    return [
+        OnRequest(found.__getitem__, count, low)
+        for count, low in zip(counts, itertools.accumulate(counts, initial=0), strict=False)
+    ]
+
+
+def _where_acting(
+    rows: Floats,
+    pick: Callable[..., Integers],
+    flat: Floats,
+    x: Floats,
+    table: FactorTable,
+    parts: Sequence[tuple[Part, ...]],
+) -> Extremes:
+    """Of values (N, R) by row of the table the one that ``pick`` picks; nothing where none acts."""
+    acting = flat.any(axis=0)
+    row = pick(rows, axis=0)
+    value = np.where(acting, np.take_along_axis(rows, row[None], 0)[0], 0.0)
+    words = table.sources(row, flat, parts, largest=pick is np.argmax)
+    sources = OnRequest(lambda r: words[r] if acting[r] else "", len(acting))
+    return Extremes(value, np.where(acting, x, 0.0), sources)

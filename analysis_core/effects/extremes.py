@@ -12,7 +12,7 @@ does is halved until none is left that could hold the largest value.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -48,16 +48,6 @@ class Peaks:
     x: Floats
     row: Integers
     contributions: Floats
-
-
-def together(peaks: Sequence[Peaks]) -> Peaks:
-    """Return the peaks of all one after the other."""
-    return Peaks(
-        np.concatenate([p.value for p in peaks]),
-        np.concatenate([p.x for p in peaks]),
-        np.concatenate([p.row for p in peaks]),
-        np.concatenate([p.contributions for p in peaks], axis=1),
-    )
 
 
 def largest(coefficients: Floats, cuts: Floats, table: FactorTable, stretches: Stretches) -> Peaks:

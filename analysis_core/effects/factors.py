@@ -10,15 +10,18 @@ from __future__ import annotations
 import itertools
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field
+from functools import cache
 
 import numpy as np
 from numpy.typing import NDArray
 
 from analysis_core.effects.arrangements import Arrangements, Part, PatternRule, loaded_spans
 from analysis_core.model import Combination
+from analysis_core.results import OnRequest
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
+_ROOM_FOR_A_BYTE = 2**54  # so much, and a byte more, is an integer of 63 bits
 _NO_MATTER = 1e-9  # a part that contributes less than this of an effect is not named
 
 
@@ -56,8 +59,10 @@ class FactorTable:
         parts: Sequence[tuple[Part, ...]],
         *,
         largest: bool,
-    ) -> list[str]:
-        """Return what governs each of B extremes: "U2 (Q on spans 1, 3)".
+    ) -> Sequence[str]:
+        """Return what governs each of B extremes, put into words when it is read.
+
+        For example "U2 (Q on spans 1, 3)".
 
         ``rows`` (B) of the table; ``contributions`` (C, B) are the unfactored effects of the parts
         at the place of the extreme, which is the ``largest`` value or the least.  ``parts`` (B) are
@@ -66,28 +71,24 @@ class FactorTable:
         named = zip(self.names, self.labels, strict=True)
         plain = [f"{name} ({label})" if label else name for name, label in named]
         if self.fixed:
-            return [plain[row] for row in rows.tolist()]
+            return OnRequest(lambda b: plain[rows[b]], len(rows))
         low, high, stated = (t[rows].T for t in (self.low, self.high, self.stated))
         upward = contributions > 0.0 if largest else contributions < 0.0
         weight = np.abs(contributions) * np.maximum(np.abs(low), np.abs(high))
         matters = weight > _NO_MATTER * np.sum(weight, axis=0)
         full = (np.where(upward, high, low) == stated) & matters
-        coded = np.ascontiguousarray(np.packbits(np.concatenate([full, matters]), axis=0).T)
-        known: dict[tuple[int, bytes, int], str] = {}
-        choices: dict[int, list[tuple[str, list[int], float]]] = {}
-        out = []
-        for b, row in enumerate(rows.tolist()):
-            key = row, coded[b].tobytes(), id(parts[b])
-            text = known.get(key)
-            if text is None:
-                if row not in choices:
-                    choices[row] = self._choices(row)
-                notes = [self.labels[row]] if self.labels[row] else []
-                notes += _notes(choices[row], full[:, b], matters[:, b], parts[b])
-                text = f"{self.names[row]} ({'; '.join(notes)})" if notes else plain[row]
-                known[key] = text
-            out.append(text)
-        return out
+        first, pattern = _patterns(rows, full, matters, parts)
+        full, matters = full[:, first], matters[:, first]
+
+        @cache
+        def words(number: int) -> str:
+            b = int(first[number])
+            row = int(rows[b])
+            notes = [self.labels[row]] if self.labels[row] else []
+            notes += _notes(self._choices(row), full[:, number], matters[:, number], parts[b])
+            return f"{self.names[row]} ({'; '.join(notes)})" if notes else plain[row]
+
+        return OnRequest(lambda b: words(int(pattern[b])), len(rows))
 
     def _choices(self, row: int) -> list[tuple[str, list[int], float]]:
         """The cases of a row that leave a choice: name, parts, share that is kept elsewhere."""
@@ -104,6 +105,29 @@ class FactorTable:
         stated = self.stated[row, first]
         other = self.low[row, first] if stated == self.high[row, first] else self.high[row, first]
         return float(other / stated) if stated else 0.0
+
+
+def _patterns(
+    rows: Integers,
+    full: NDArray[np.bool_],
+    matters: NDArray[np.bool_],
+    parts: Sequence[tuple[Part, ...]],
+) -> tuple[Integers, Integers]:
+    """Of B extremes the first of each that the same words fit, and the pattern of every one (B).
+
+    The same words fit where row, marks (C, B) and parts are the same.
+    """
+    own = {id(each): i for i, each in enumerate({id(p): p for p in parts}.values())}
+    pattern = rows * len(own) + np.array([own[id(each)] for each in parts], dtype=np.int64)
+    bound = (int(rows.max(initial=0)) + 1) * max(1, len(own))
+    for byte in np.packbits(np.concatenate([full, matters]), axis=0).astype(np.int64):
+        if bound > _ROOM_FOR_A_BYTE:
+            pattern = np.unique(pattern, return_inverse=True)[1]
+            bound = len(pattern)
+        pattern = (pattern << 8) | byte
+        bound <<= 8
+    _, first, pattern = np.unique(pattern, return_index=True, return_inverse=True)
+    return first, pattern
 
 
 def factor_table(

@@ -25,7 +25,7 @@ from analysis_core.effects.arrangements import (
     with_recased,
 )
 from analysis_core.effects.combinations import combine
-from analysis_core.effects.envelopes import envelopes
+from analysis_core.effects.envelopes import envelopes_by_state
 from analysis_core.errors import AnalysisError, MechanismError
 from analysis_core.findings import Finding
 from analysis_core.load_levels import levels
@@ -388,19 +388,13 @@ def _finished(
     tell("Verifying", 0.0)
     differences = stiffness_check.largest_differences([s.whole for s in new])
     tell("Verifying", 1.0)
-    by_line: list[dict[str, LineEnvelope]] = [{} for _ in new]
-    states = dict.fromkeys(c.limit_state for c in rules.combinations)
-    for done, state in enumerate(states):
-        tell("Enveloping", done / len(states))
-        found = envelopes(
-            [s.spans for s in new],
-            [s.parts for s in new],
-            rules.combinations,
-            limit_state=state,
-            arrangements=rules.arrangements,
-        )
-        for mine, envelope in zip(by_line, found, strict=True):
-            mine[state] = envelope
+    tell("Enveloping", 0.0)
+    by_line = envelopes_by_state(
+        [s.spans for s in new],
+        [s.parts for s in new],
+        rules.combinations,
+        arrangements=rules.arrangements,
+    )
     tell("Enveloping", 1.0)
     fresh = [
         _Kept(s.parts, difference, envelope)
