@@ -141,6 +141,11 @@ class OnRequest(Sequence[Item]):
     def __iter__(self) -> Iterator[Item]:
         return map(self._make, self._numbers)
 
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, Sequence) and tuple(self) == tuple(other)
+
+    __hash__ = None  # type: ignore[assignment]  # as a list: two may be equal
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Extremes:

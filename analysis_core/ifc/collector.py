@@ -1,4 +1,4 @@
-"""The garbage collector during a bulk read."""
+"""The garbage collector while a whole building is treated."""
 
 from __future__ import annotations
 
@@ -9,7 +9,7 @@ from contextlib import contextmanager
 
 @contextmanager
 def collector_paused() -> Iterator[None]:
-    """Pause the garbage collector: a bulk read makes many objects that stay, and no rubbish."""
+    """Pause the garbage collector: bulk work makes many objects that stay, and no rubbish."""
     was_on = gc.isenabled()
     gc.disable()
     try:

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 
 from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
+from analysis_core.ifc.collector import collector_paused
 from analysis_core.model import LineModel
 from analysis_core.pipeline.progress import Progress, silent
 from analysis_core.pipeline.reading import Survey, check_marks, survey
@@ -54,10 +55,17 @@ def solve(
     memory: Memory | None = None,
 ) -> Outcome:
     """Solve what a survey found; with a ``memory``, only what it does not know yet."""
+    with collector_paused():
+        return _solved(found, settings, progress or silent, only, memory)
+
+
+def _solved(
+    found: Survey, settings: Settings, tell: Progress, only: Sequence[str], memory: Memory | None
+) -> Outcome:
     rules, assumed = choose(found.model, settings)
     reduced, by_area = reduced_by_area(found.model, settings, rules.rule_set)
     model = with_combinations(reduced, rules)
-    results, failed = solve_lines(model, rules, settings, progress or silent, memory)
+    results, failed = solve_lines(model, rules, settings, tell, memory)
     findings = (*assumed, *by_area, *failed)
     if only:
         results = tuple(r for r in results if r.line.mark in only)

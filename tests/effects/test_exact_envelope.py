@@ -519,6 +519,33 @@ def test_a_part_without_influence_is_not_named():
     assert source == "U1 (Q on span 1)"
 
 
+def test_extremes_of_many_parts_are_named_together_as_each_alone():
+    # 70 parts leave 140 marks, more than one integer holds; B extremes of two lines' parts.
+    rng = np.random.default_rng(8)
+    lines = [
+        tuple(Part(f"Q @ {at} {n}", "Q", f"{at} {n}", n) for n in range(70)) for at in ("span", "x")
+    ]
+    combinations = [
+        Combination(f"U{n}", "strength", {"Q": 1.0 + n}, favourable={"Q": 0.0}) for n in range(3)
+    ]
+    table = factor_table(combinations, lines[0], EVERY, range(70))
+    contributions = rng.normal(size=(70, 40))
+    contributions[:, 20:] = contributions[:, :20]  # every second half needs the words of the first
+    rows = np.tile(rng.integers(3, size=20), 2)
+    parts = [lines[b % 2] for b in range(40)]
+
+    together = table.sources(rows, contributions, parts, largest=True)
+
+    for b in range(40):
+        one = slice(b, b + 1)
+        (alone,) = table.sources(rows[one], contributions[:, one], parts[one], largest=True)
+        on = np.flatnonzero(contributions[:, b] > 0.0)
+        places = ", ".join(f"{'' if b % 2 == 0 else 'x '}{n}" for n in on)
+        assert together[b] == alone
+        assert alone == f"U{rows[b]} (Q on {'spans ' if b % 2 == 0 else ''}{places})"
+    assert len(set(together)) == 20
+
+
 def test_an_action_on_a_joint_belongs_to_the_span_on_its_left():
     line = beam_line([5.0] * 2, [1e7] * 2, [PIN] * 3, [JointForce("Q", 1, moment=3e3)])
 

@@ -16,6 +16,7 @@ from pathlib import Path
 from typing import Literal
 
 from analysis_core.errors import IfcWriteError
+from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.posting import clearing
 from analysis_core.ifc.posting.posting import Posting, PostReport, Progress
 from analysis_core.ifc.posting.section_forces import CaseStations
@@ -64,11 +65,11 @@ def post(
     """
     tell = progress or _silent
     moment = computed_at or datetime.now(UTC)
-    job = Posting(outcome, only, stations, moment, tell, analysis_model=analysis_model)
     source = Path(source_path)
-    with atomic.writing_to(target_path) as target:
+    with atomic.writing_to(target_path) as target, collector_paused():
         guard = _Guard(source, target)
         stored = read_container(source)
+        job = Posting(outcome, only, stations, moment, tell, analysis_model=analysis_model)
         job.prepare(stored, source.name)
         content = stored.packed(job.parts(), way_back=True)
         atomic.replace_file(target, content, before=guard.check)
