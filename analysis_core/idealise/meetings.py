@@ -22,6 +22,11 @@ from analysis_core.idealise.spans import Chain, Seating, outer_end, seat_key
 from analysis_core.model import FREE, RIGID
 from analysis_core.settings import Tolerances
 
+# Bearings nearer to each other than this are one (m).
+_APART = 0.05
+# A beam this many times as stiff as what lies on it is near enough to a rigid support.
+_FIRM = 10.0
+
 
 @dataclass(slots=True)
 class _Side:
@@ -185,6 +190,9 @@ def _rest(
             joint.elements.append(element)
             joint.width = side.bearing.width if side.bearing else 0.0
             joint.reason = _reason(carrier, element, side, contact)
+        elif contact.settled:
+            joint.reason += "; its deflection is neglected"
+            _report_yielding(found[side.line], carried, carrier, contact, log)
         scheme.rests.append(Rest(carried, joint.key, carrier, member=element, station=station))
         if contact.doubtful:
             log.add(
@@ -196,6 +204,32 @@ def _rest(
                 (*carried.elements, *carrier.elements),
                 mark,
             )
+
+
+def _report_yielding(
+    chain: Chain, carried: Draft, carrier: Draft, contact: Contact, log: Log
+) -> None:
+    """Warn where a line that stands anyway lies on one that yields about as much as itself."""
+    firm = [s.run for s in chain.seatings if s.best.kind not in ("beam", "beam below")]
+    stiffness = {touch.body: touch.stiffness for touch in contact.touches}
+    own, below = stiffness[carried.mark], stiffness[carrier.mark]
+    if len(firm) < 2 or max(firm) - min(firm) < _APART or below > _FIRM * own:
+        return
+    log.add(
+        "warning",
+        "grillage-crossing",
+        f"Line {carried.mark} lies on line {carrier.mark}, but stands on other bearings as well. "
+        f"{carrier.mark} is taken as a rigid support although it is only {_times(below, own)} as "
+        f"stiff against a force there, so that in truth {carried.mark} bends more and hands down "
+        f"less. State the support in the job file as free or as a spring (supports: on, at) to see "
+        f"how much this matters.",
+        (*carried.elements, *carrier.elements),
+        carried.mark,
+    )
+
+
+def _times(below: float, own: float) -> str:
+    return f"{below / own:.2g} times" if own > 0.0 else "about"
 
 
 def _joint(carried: Draft, chain: Chain, side: _Side, key: str) -> DraftJoint:

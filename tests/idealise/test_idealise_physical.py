@@ -136,6 +136,25 @@ def test_a_beam_on_top_of_others_rests_on_them_and_runs_through():
     assert len(found.transfers) == 3
 
 
+@pytest.mark.parametrize(("below", "warned"), [(8.0, True), (2.5, False)])
+def test_a_beam_that_lies_on_a_soft_one_between_columns_is_warned_of(below, warned):
+    """At mid-span a beam resists 48 EI / L³: the lower one (6 / 8)³ = 0.42 times the upper one."""
+    half = below / 2.0
+    columns = [column(f"C{x}", x, 0.0, 0.0, Z - 0.2) for x in (-half, half)]
+    columns += [column(f"D{y}", 0.0, y, 0.0, Z + 0.2) for y in (-3.0, 3.0)]
+    lower = beam("P", (-half, 0.0, Z), (half, 0.0, Z))
+    upper = beam("S", (0.0, -3.0, Z + 0.4), (0.0, 3.0, Z + 0.4))
+    found = idealise(house([lower, upper], columns), Settings())
+    line = next(line for line in found.lines if line.elements == ("S",))
+
+    assert "its deflection is neglected" in line.joints[1].reason
+    assert ("grillage-crossing" in slugs(found)) == warned
+    if warned:
+        told = finding(found, "grillage-crossing")
+        assert told.line == line.mark
+        assert "0.42 times as stiff" in told.message
+
+
 def test_a_rafter_on_a_slab_bears_where_its_foot_touches():
     slab = block("S", "IfcSlab", (-1.0, -4.0, 2.8), (2.0, 4.0, 3.0))
     ridge = beam("R", (4.0, -4.0, 6.0 - 0.2), (4.0, 4.0, 6.0 - 0.2))
