@@ -143,6 +143,19 @@ def test_an_implausible_modulus_is_reported_and_kept():
     assert "0.5 to 1000 GPa" in findings[0].message
 
 
+@pytest.mark.parametrize(("density", "told"), [(7.85e-6, True), (7850e3, True), (420.0, False)])
+def test_a_density_in_the_wrong_unit_is_reported_unless_the_job_settles_it(density, told):
+    """Steel in kg/mm³ leaves self weight out in silence, in g/m³ it makes a thousand of it."""
+    maker = Maker()
+    material = maker.make("IfcMaterial", "Steel")
+    stated(maker, material, "Pset_MaterialMechanical", YoungModulus=210e9)
+    stated(maker, material, "Pset_MaterialCommon", MassDensity=density)
+    settled = Settings(materials=(MaterialSetting("st*", density=7850.0),))
+
+    assert [f.slug for f in read(maker, material)[1]] == ["implausible-density"] * told
+    assert read(maker, material, settled)[1] == []
+
+
 def test_a_material_that_tells_nothing_is_reported_unless_the_job_settles_it():
     maker = Maker()
     material = maker.make("IfcMaterial", "Solid")

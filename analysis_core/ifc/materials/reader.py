@@ -21,6 +21,7 @@ from analysis_core.model import Material
 from analysis_core.settings import Settings
 
 PLAUSIBLE_MODULUS = (0.5e9, 1000e9)
+_PLAUSIBLE_DENSITY = (50.0, 25e3)  # kg/m³: from foamed concrete to well beyond steel and lead
 """Pa; common practice: every structural material lies well inside."""
 
 _CATEGORY = {
@@ -169,6 +170,7 @@ def _material(
     )
     findings = [_trouble(name, trouble) for trouble in stated.troubles]
     findings += _modulus_findings(material, known if by_name else None, settings)
+    findings += _density_findings(material, settings)
     return material, tuple(findings)
 
 
@@ -239,6 +241,24 @@ def _modulus_findings(material: Material, known: Known | None, settings: Setting
             )
         ]
     return []
+
+
+def _density_findings(material: Material, settings: Settings) -> list[Finding]:
+    low, high = _PLAUSIBLE_DENSITY
+    name = material.name.casefold()
+    if material.density == 0.0 or low <= material.density <= high:
+        return []
+    if any(s.density > 0.0 and fnmatchcase(name, s.name.casefold()) for s in settings.materials):
+        return []
+    return [
+        Finding(
+            "warning",
+            "implausible-density",
+            f"Material '{material.name}' states a density of {material.density:.4g} kg/m³; "
+            f"structural materials have {low:g} to {high:g} kg/m³. Self weight is computed from "
+            f"it as stated. Check its unit, or give it in the job file (materials: density).",
+        )
+    ]
 
 
 def _settled_by(settings: Settings, name: str) -> bool:
