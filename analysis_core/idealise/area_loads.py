@@ -276,7 +276,8 @@ def _put(load: _Load, receiver: Receiver, share: Share, placer: Placer) -> None:
 
 def _report(source: str, total: _Sum, log: Log) -> None:
     rules = {
-        "panels": "panel by panel (one way where twice as long as wide, else by bisecting angles)",
+        "panels": "panel by panel (one way where twice as long as wide, else by bisecting angles; "
+        "by these alone where beams do not close the panels)",
         "two-way": "by bisecting angles",
         "one-way": "one way along the span direction",
     }

@@ -17,6 +17,8 @@ from analysis_core.model import FREE
 
 # How far a missing bearing is looked for, sideways and in height (m).
 _REACH = np.array([2.0, 2.0, 1.5])
+# Nearer than this (m) it would hold the end if it came from below.
+_HERE = 0.05
 # An overhang longer than this part of the next span is worth a warning.
 _LONG = 0.5
 
@@ -72,10 +74,14 @@ def _nearest(physical: PhysicalScheme, ends: list[tuple[Draft, DraftJoint]]) -> 
         carrier = carriers[b]
         gap = gap_to(carrier.corners, (points[a][0], points[a][1]))
         rise = max(carrier.bottom - points[a][2], points[a][2] - carrier.top, 0.0)
-        text = (
-            f"the nearest is {kind_of(carrier)} '{carrier.name}' (GlobalId {carrier.global_id}), "
-            f"{gap * 1e3:.0f} mm away in plan and {rise * 1e3:.0f} mm in height"
-        )
+        name = f"{kind_of(carrier)} '{carrier.name}' (GlobalId {carrier.global_id})"
+        if gap + rise < _HERE:
+            text = f"{name} is there, but does not come up to it from below"
+        else:
+            text = (
+                f"the nearest is {name}, {gap * 1e3:.0f} mm away in plan and {rise * 1e3:.0f} mm "
+                f"in height"
+            )
         best[a] = min(best.get(a, (math.inf, "")), (gap + rise, text))
     nothing = "no column, wall or footing is within 2 m"
     return [best[a][1] if a in best else nothing for a in range(len(ends))]

@@ -100,6 +100,14 @@ def test_a_column_that_stands_on_the_beam_does_not_hold_it():
     assert spans(line) == [6.0]
 
 
+def test_a_column_that_starts_at_a_beams_end_is_said_not_to_hold_it():
+    carriers = [column("C0", 0.0, 0.0, 0.0, Z - 0.2), column("upper", 6.0, 0.0, Z, 6.0)]
+    line = only(idealise(house([beam("B", (0.0, 0.0, Z), (6.0, 0.0, Z))], carriers), Settings()))
+
+    assert line.fault
+    assert "'upper' (GlobalId upper) is there, but does not come up to it" in line.joints[1].reason
+
+
 def test_secondary_beams_rest_on_the_primary_that_they_frame_into():
     """Two secondaries, face to face of the primary; by rule not continuous through it."""
     columns = [column("C0", 0.0, 0.0, 0.0, Z - 0.2), column("C1", 7.0, 0.0, 0.0, Z - 0.2)]
