@@ -184,6 +184,29 @@ def test_the_module_runs_and_a_closed_pipe_is_no_error():
         assert process.stderr.read() == b""
 
 
+@pytest.mark.parametrize("asked", [["survey"], ["balance", "--json", "-"]])
+def test_a_terminal_without_our_characters_gets_escapes_instead(asked, tmp_path):
+    """A list with kN·m², and JSON that must stay JSON, where the encoding is ASCII."""
+    model = tmp_path / "umlaut.ifc"
+    text = MODEL.read_text(encoding="utf-8").replace("'C-A1'", r"'S\X2\00E4\X0\ule'")
+    model.write_text(text, encoding="utf-8")
+    command = [sys.executable, "-m", "analysis_core", asked[0], str(model), *asked[1:]]
+    environment = {**os.environ, "PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"}
+    done = subprocess.run(command, capture_output=True, cwd=ROOT, env=environment, check=False)
+
+    assert (done.returncode, done.stderr) == (0, b"")
+    if "--json" in asked:
+        assert "'Säule'" in str(json.loads(done.stdout))
+    else:
+        assert b"kN\\xb7m\\xb2" in done.stdout
+
+
+@pytest.mark.skipif(os.name != "posix", reason="streams are closed by a POSIX shell")
+def test_closed_streams_are_no_fault_of_the_program():
+    command = f"{sys.executable} -m analysis_core survey {MODEL} >&- 2>&-"
+    assert subprocess.run(command, shell=True, cwd=ROOT, check=False).returncode == 0
+
+
 def test_a_model_cannot_drive_the_terminal(run, tmp_path):
     text = MODEL.read_text(encoding="utf-8").replace("'C-A1'", r"'C\X\1B\X\07[2Jevil'")
     hostile = tmp_path / "hostile.ifc"

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import argparse
+import io
 import json
+import os
 import sys
 from collections.abc import Callable
 from pathlib import Path
@@ -12,10 +14,26 @@ from typing import Any
 from analysis_core.errors import JobError
 
 
+def ready_streams() -> None:
+    """Let nothing that a model holds stop the printing.
+
+    A stream that was closed takes what is written and drops it; one whose encoding lacks a
+    character gets an escape in its place.
+    """
+    for name in ("stdout", "stderr"):
+        stream = getattr(sys, name)
+        if stream is None:
+            setattr(sys, name, open(os.devnull, "w", encoding="utf-8"))  # noqa: SIM115  # for good
+        elif isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="backslashreplace")
+
+
 def put(options: argparse.Namespace, document: Callable[[], Any], text: str) -> None:
     """Print the table, unless the JSON goes to stdout; write the JSON where it was asked for."""
     if options.json:
-        data = json.dumps(document(), ensure_ascii=False, indent=1, allow_nan=False)
+        # Escapes of the stream would be no JSON; those of JSON itself fit any encoding.
+        plain = options.json == "-" and "utf" not in (sys.stdout.encoding or "").lower()
+        data = json.dumps(document(), ensure_ascii=plain, indent=1, allow_nan=False)
         if options.json == "-":
             print(data)
             return

@@ -13,6 +13,7 @@ from collections.abc import Sequence
 
 from analysis_core.cli import commands
 from analysis_core.cli.options import parser
+from analysis_core.cli.output import ready_streams
 from analysis_core.cli.output_paths import check_outputs
 from analysis_core.errors import AnalysisError
 from analysis_core.report.tables import safe
@@ -22,6 +23,7 @@ FAILED = 2
 
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command and return the exit status."""
+    ready_streams()
     options = parser().parse_args(arguments)
     try:
         _check_outputs(options)
