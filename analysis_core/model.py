@@ -87,9 +87,37 @@ class Material:
     density: float = 0.0
     thermal_expansion: float = 0.0
     category: str = ""
-    """"steel", "concrete", "timber" or "" where it could not be told."""
+    """"steel", "stainless", "concrete", "timber", "hardwood", "glulam", "lvl"; "": not known."""
     strength: tuple[tuple[str, float], ...] = ()
     source: str = ""
+
+    @property
+    def usable_shear_modulus(self) -> float:
+        """The shear modulus to work with, Pa: as stated where it can be true, else from E.
+
+        0 where none is stated that can be true and the category tells no ratio.
+        """
+        if self.shear_modulus_is_plausible:
+            return self.shear_modulus
+        ratio = _MODULUS_RATIOS.get(self.category)
+        return self.elastic_modulus / ratio[0] if ratio else 0.0
+
+    @property
+    def shear_modulus_is_plausible(self) -> bool:
+        """Whether the stated shear modulus goes with the modulus of elasticity."""
+        low, high = _MODULUS_RATIOS.get(self.category, (0.0, *_ANY_RATIO))[1:]
+        return low * self.shear_modulus <= self.elastic_modulus <= high * self.shear_modulus
+
+
+_WOOD = (16.0, 8.0, 40.0)
+# E over G, and the least and the largest ratio that can be true.  Steel: Poisson's ratio of 0.3
+# (EN 1993-1-1, 3.2.6) give or take a tenth; concrete: 0.2 (EN 1992-1-1, 3.1.3), cracked 0; timber:
+# EN 338 has 16 throughout, EN 14080 up to 22.  A value far from it is a slip of units.
+_MODULUS_RATIOS = {
+    "steel": (2.6, 2.34, 2.89), "stainless": (2.6, 2.34, 2.89), "concrete": (2.4, 1.8, 3.3),
+    "timber": _WOOD, "hardwood": _WOOD, "glulam": _WOOD, "lvl": _WOOD,
+}  # fmt: skip
+_ANY_RATIO = (1.8, 60.0)
 
 
 @dataclass(frozen=True, slots=True)

@@ -115,6 +115,11 @@ def _outside(member: Member, code: str, factored: bool) -> str:
     section, material = member.section, member.material
     if section is None or material is None:
         return "The member has no section or no material; its rigidity was stated."
+    if material.category == "stainless" and code not in FIGURES:
+        return (
+            f"Material '{material.name}' is stainless steel, for which the clauses for carbon "
+            f"steel do not hold; EN 1993-1-4 and AISC 370 are not covered."
+        )
     if code not in FIGURES:
         what = f"'{material.category}'" if material.category else "a kind that is not known"
         return f"Material '{material.name}' is of {what}; no check covers it under these rules."

@@ -18,7 +18,10 @@ Floats = NDArray[np.float64]
 
 # Part of the resistance below which an axial force is taken as none; common practice.
 NEGLIGIBLE = 1e-3
-_STAINLESS = re.compile(r"stainless|edelstahl|nichtrostend|inox|rostfri|\b1\.4[34]\d\d", re.I)
+_STAINLESS = re.compile(
+    r"stainless|edelstahl|nichtrostend|inox|rostfri|\b1\.4\d{3}\b|\bsus ?\d{3}|\baisi ?[34]\d\d",
+    re.I,
+)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -263,5 +266,5 @@ def unlike_profile(section: Section) -> str:
 
 
 def is_stainless(material: Material) -> bool:
-    """Whether a steel is stainless by its name: other standards hold for it."""
-    return bool(_STAINLESS.search(material.name))
+    """Whether a steel is stainless by its category or name: other standards hold for it."""
+    return material.category == "stainless" or bool(_STAINLESS.search(material.name))

@@ -82,7 +82,7 @@ def _reduction(
 ) -> float:
     """χ_LT of a segment, written down where there is a working to write it in."""
     section, iw = design.section, plates(design.section).get("warping", 0.0)
-    e, g = design.material.elastic_modulus, shear_modulus(design)
+    e, g = design.material.elastic_modulus, design.material.usable_shear_modulus
     c1, length = moment_gradient(segment), segment.length
     critical = critical_moment(
         c1, length, e=e, g=g, iz=section.inertia_lateral, it=section.torsion, iw=iw
@@ -117,15 +117,6 @@ def _reduction(
             "6.3.2.3(1), (6.57)", note=f"plateau {plateau:g}, β = {beta:g}",
         )  # fmt: skip
     return w.step("χ_LT", "1 / (Φ_LT + √(Φ_LT² - λ_LT²)) ≤ 1", chi, "", "6.3.2.2(1), (6.56)")
-
-
-def shear_modulus(design: MemberDesign) -> float:
-    """Return G as the material states it where it can be that of a steel, else E/2.6, Pa.
-
-    EN 1993-1-1, 3.2.6: G = E / (2 (1 + ν)) with ν = 0.3; a value far from it is a slip of units.
-    """
-    e, g = design.material.elastic_modulus, design.material.shear_modulus
-    return g if 0.9 * e / 2.6 <= g <= 1.1 * e / 2.6 else e / 2.6
 
 
 def buckling_curve(design: MemberDesign) -> tuple[str, str]:

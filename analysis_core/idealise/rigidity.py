@@ -15,8 +15,6 @@ from analysis_core.model import Material, Piece, Section
 
 # Product of inertia, as a fraction of the larger inertia, above which bending is called oblique.
 _OBLIQUE = 0.01
-# Shear modulus where only E is known: E / (2 (1 + nu)), and for timber E/16 (common practice).
-_SHEAR_RATIO = {"steel": 2.6, "concrete": 2.4, "timber": 16.0}
 _EXTENSION = 1e-9
 
 
@@ -57,6 +55,7 @@ def rigidity_of(
     if not (told and abs(turn.sin) < _OBLIQUE):
         _report_oblique(member, section, turn, log, line)
     modulus = material.elastic_modulus
+    _report_shear_modulus(material, log)
     shear = None
     if shear_flexible:
         shear = _shear_rigidity(member, properties, turn, log, line)
@@ -134,6 +133,22 @@ def _report_oblique(member: AxisMember, section: Section, turn: _Turn, log: Log,
     )
 
 
+def _report_shear_modulus(material: Material, log: Log) -> None:
+    """One rule for the analysis and the checks: what cannot be true is not used."""
+    stated, used = material.shear_modulus, material.usable_shear_modulus
+    if stated <= 0.0 or material.shear_modulus_is_plausible:
+        return
+    instead = f"G = {used / 1e9:.4g} GPa is taken from E" if used > 0.0 else "it is not used"
+    log.add(
+        "warning",
+        "implausible-modulus",
+        f"Material '{material.name}' states a shear modulus of {stated / 1e6:.4g} MPa beside "
+        f"E = {material.elastic_modulus / 1e6:.4g} MPa, which no structural material has; "
+        f"{instead}. Put it and its units right in the model, or in the job file (materials: name "
+        f"'{material.name}', shear_modulus).",
+    )
+
+
 def _shear_rigidity(
     member: AxisMember, properties: Properties, turn: _Turn, log: Log, line: str
 ) -> Coefficients | None:
@@ -141,7 +156,7 @@ def _shear_rigidity(
     assert section is not None
     assert material is not None
     areas = [s.shear_area for s in (section, end or section)]
-    modulus = _shear_modulus(material)
+    modulus = material.usable_shear_modulus
     if abs(turn.cos) < 0.9 or min(areas) <= 0.0 or modulus <= 0.0:
         what = "shear modulus" if modulus <= 0.0 else "shear area in the plane of bending"
         log.add(
@@ -162,13 +177,6 @@ def _shear_rigidity(
         )
     first, last = (modulus * area for area in areas)
     return (first,) if first == last else (first, last - first)
-
-
-def _shear_modulus(material: Material) -> float:
-    if material.shear_modulus > 0.0:
-        return material.shear_modulus
-    ratio = _SHEAR_RATIO.get(material.category)
-    return material.elastic_modulus / ratio if ratio else 0.0
 
 
 def _stated_taper(

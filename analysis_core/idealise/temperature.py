@@ -14,7 +14,10 @@ from analysis_core.model import Material
 
 # Linear expansion in 1/K where only the kind of material is known: EN 1991-1-5:2003, table C.1
 # (steel 12e-6, concrete 10e-6, timber along the grain 5e-6), from memory.
-_EXPANSION = {"steel": 12e-6, "concrete": 10e-6, "timber": 5e-6}
+_EXPANSION = {
+    "steel": 12e-6, "stainless": 16e-6, "concrete": 10e-6, "timber": 5e-6, "hardwood": 5e-6,
+    "glulam": 5e-6, "lvl": 5e-6,
+}  # fmt: skip
 
 
 def put_temperature_actions(

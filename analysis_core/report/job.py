@@ -73,7 +73,7 @@ def _material(material: Material) -> str:
     values = [f"elastic_modulus: {material.elastic_modulus / 1e6!r} MPa"]
     if material.density:
         values.append(f"density: {material.density!r} kg/m3")
-    if material.category in ("steel", "concrete", "timber"):
+    if material.category:
         values.append(f"category: {material.category}")
     name = "".join(f"[{c}]" if c in "*?[" else c for c in material.name)
     return (

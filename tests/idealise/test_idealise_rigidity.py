@@ -151,6 +151,23 @@ def test_a_shear_modulus_is_assumed_from_the_kind_of_material_and_said():
     assert "assumed-shear-modulus" in slugs(found)
 
 
+@pytest.mark.parametrize("shear_flexible", [True, False])
+def test_a_shear_modulus_that_cannot_be_true_is_not_used_and_named(shear_flexible):
+    on = Settings(
+        analysis=Analysis(shear_flexible=shear_flexible),
+        materials=(MaterialSetting("S235", elastic_modulus=200e9),),
+    )
+    absurd = replace(STEEL, shear_modulus=11.2)  # ksi taken for Pa
+    beam = member("B", (0.0, 0.0, 0.0), (6.0, 0.0, 0.0), material=absurd)
+    nodes = [node(f"n{x}", (x, 0.0, 0.0), PINNED) for x in (0.0, 6.0)]
+    found = idealise(model([beam], nodes), on)
+
+    # G = E / (2 (1 + 0.3)) for steel, as where none is stated.
+    expected = (pytest.approx(0.004 * 200e9 / 2.6),) if shear_flexible else None
+    assert only(found).members[0].pieces[0].shear == expected
+    assert "shear modulus of 1.12e-05 MPa" in finding(found, "implausible-modulus").message
+
+
 def test_pieces_of_a_tapering_member_are_as_long_as_it():
     line = only(beam_of(rectangle(0.3), rectangle(0.7), nodes=(0.0, 1.1, 4.7, 6.0)))
 

@@ -34,9 +34,9 @@ def read(maker, entity, settings=None):
         ("SN490B", "steel", 205.0, {"fy": 325.0, "fu": 490.0}),
         ("C24", "timber", 11.0, {"fmk": 24.0, "fvk": 4.0}),
         ("KVH Fichte C24", "timber", 11.0, {"fmk": 24.0, "fvk": 4.0}),
-        ("D40", "timber", 13.0, {"fmk": 40.0, "fvk": 4.2}),
-        ("GL28c", "timber", 12.5, {"fmk": 28.0, "fvk": 3.5}),
-        ("Brettschichtholz GL 24h", "timber", 11.5, {"fmk": 24.0, "fvk": 3.5}),
+        ("D40", "hardwood", 13.0, {"fmk": 40.0, "fvk": 4.2, "fc90k": 5.5}),
+        ("GL28c", "glulam", 12.5, {"fmk": 28.0, "fvk": 3.5, "fc90k": 2.5}),
+        ("Brettschichtholz GL 24h", "glulam", 11.5, {"fmk": 24.0, "fvk": 3.5, "fc90k": 2.5}),
     ],
 )
 def test_names_of_grades(name, category, modulus, strength):
@@ -48,6 +48,29 @@ def test_names_of_grades(name, category, modulus, strength):
         strength, rel=1e-3
     )
     assert not known.assumed
+
+
+# EN 338:2016 gives the strength across the grain as EN 384 derives it from the characteristic
+# density, which is the mean over 1.2: 0.007 of it for softwood, 0.010 for hardwood, 0.015 from
+# 700 kg/m3 on (MPa; from memory).  The table rounds to 0.1 and its densities to 10 kg/m3.
+@pytest.mark.parametrize(
+    ("name", "factor"),
+    [(f"C{grade} timber", 0.007) for grade in (14, 16, 18, 20, 22, 24, 27, 30, 35, 40, 45, 50)]
+    + [(f"D{grade}", 0.010) for grade in (18, 24, 27, 30, 35, 40, 45, 50, 55)]
+    + [(f"D{grade}", 0.015) for grade in (60, 65, 70)],
+)
+def test_the_strength_across_the_grain_follows_from_the_density(name, factor):
+    known = known_material(name)
+
+    across = known.strength["fc90k"] / MPA
+    assert across == pytest.approx(factor * known.density / 1.2, abs=0.1)
+
+
+@pytest.mark.parametrize(
+    "name", ["1.4301", "1.4571", "Edelstahl V4A", "Stainless Steel 316", "SUS304", "AISI 316L"]
+)
+def test_stainless_steel_is_a_category_of_its_own(name):
+    assert known_material(name).category == "stainless"
 
 
 @pytest.mark.parametrize("name", ["Steel", "Stahlbeton", "Structural Concrete", "Holz", "acier"])

@@ -25,9 +25,9 @@ _PLAUSIBLE_DENSITY = (50.0, 25e3)  # kg/m³: from foamed concrete to well beyond
 """Pa; common practice: every structural material lies well inside."""
 
 _CATEGORY = {
-    "glulam": "timber", "lvl": "timber", "hardwood": "timber", "timber": "timber",
+    "glulam": "glulam", "lvl": "lvl", "hardwood": "hardwood", "timber": "timber",
     "concrete": "concrete", "lightweight concrete": "concrete", "steel": "steel",
-    "stainless": "steel",
+    "stainless": "stainless",
 }  # fmt: skip
 
 # Names of properties as the standard's sets (Pset_MaterialMechanical, …Common, …Concrete,
@@ -184,9 +184,7 @@ def _shear_modulus(
     poisson = values.get("poisson", -1.0)
     if 0.0 <= poisson <= 0.5:
         return modulus / (2.0 * (1.0 + poisson))
-    category = _CATEGORY.get(kind, "")
-    ratio = {"steel": 2.6, "concrete": 2.4, "timber": 16.0}.get(category)
-    return modulus / ratio if ratio else 0.0
+    return Material("", modulus, category=_CATEGORY.get(kind, "")).usable_shear_modulus
 
 
 def _strength(values: Mapping[str, float], known: Known | None) -> dict[str, float]:

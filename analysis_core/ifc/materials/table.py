@@ -56,7 +56,11 @@ def kind_of(text: str) -> str:
 
 
 _KINDS = (
-    ("stainless", r"stainless|edelstahl|nichtrostend|inox|rostfri|1\.4[34]\d\d"),
+    (
+        "stainless",
+        r"stainless|edelstahl|nichtrostend|inox|rostfri|\b1\.4\d{3}\b|\bsus ?\d{3}"
+        r"|\baisi ?[34]\d\d",
+    ),
     ("aluminium", r"alumin|alumíni|alu\b"),
     (
         "lightweight concrete",
@@ -214,17 +218,21 @@ def _en_concrete(text: str, kind: str) -> Known | None:
     return None
 
 
-# EN 338:2016, tables 1 and 3: class: bending MPa, E0,mean GPa, mean density, shear MPa.
+# EN 338:2016, tables 1 and 3: bending strength in MPa: E0,mean GPa, mean density, shear strength
+# and compressive strength across the grain, MPa.
 _SOFTWOOD = {
-    14: (7.0, 350, 3.0), 16: (8.0, 370, 3.2), 18: (9.0, 380, 3.4), 20: (9.5, 400, 3.6),
-    22: (10.0, 410, 3.8), 24: (11.0, 420, 4.0), 27: (11.5, 430, 4.0), 30: (12.0, 460, 4.0),
-    35: (13.0, 470, 4.0), 40: (14.0, 480, 4.0), 45: (15.0, 490, 4.0), 50: (16.0, 520, 4.0),
+    14: (7.0, 350, 3.0, 2.0), 16: (8.0, 370, 3.2, 2.2), 18: (9.0, 380, 3.4, 2.2),
+    20: (9.5, 400, 3.6, 2.3), 22: (10.0, 410, 3.8, 2.4), 24: (11.0, 420, 4.0, 2.5),
+    27: (11.5, 430, 4.0, 2.5), 30: (12.0, 460, 4.0, 2.7), 35: (13.0, 470, 4.0, 2.7),
+    40: (14.0, 480, 4.0, 2.8), 45: (15.0, 490, 4.0, 2.9), 50: (16.0, 520, 4.0, 3.0),
 }  # fmt: skip
 _HARDWOOD = {
-    18: (9.5, 570, 3.5), 24: (10.0, 580, 3.7), 27: (10.5, 610, 3.8), 30: (11.0, 640, 3.9),
-    35: (12.0, 650, 4.1), 40: (13.0, 660, 4.2), 45: (13.5, 700, 4.4), 50: (14.0, 740, 4.5),
-    55: (15.5, 790, 4.7), 60: (17.0, 840, 4.8), 65: (18.5, 900, 5.0), 70: (20.0, 960, 5.0),
+    18: (9.5, 570, 3.5, 4.8), 24: (10.0, 580, 3.7, 4.9), 27: (10.5, 610, 3.8, 5.1),
+    30: (11.0, 640, 3.9, 5.3), 35: (12.0, 650, 4.1, 5.4), 40: (13.0, 660, 4.2, 5.5),
+    45: (13.5, 700, 4.4, 5.8), 50: (14.0, 740, 4.5, 6.2), 55: (15.5, 790, 4.7, 6.6),
+    60: (17.0, 840, 4.8, 10.5), 65: (18.5, 900, 5.0, 11.3), 70: (20.0, 960, 5.0, 12.0),
 }  # fmt: skip
+_GLULAM_ACROSS = 2.5  # EN 14080, table 5: f_c,90,g,k, MPa, of every class
 # EN 14080:2013, tables 4 and 5: E0,mean GPa and mean density.
 _GLULAM = {
     "20h": (8.4, 370), "22h": (10.5, 410), "24h": (11.5, 420), "26h": (12.1, 445),
@@ -235,10 +243,29 @@ _GLULAM = {
 
 
 def _timber_of(
-    grade: str, fmk: float, e: float, density: float, fvk: float, source: str, assumed: str = ""
+    grade: str,
+    fmk: float,
+    row: tuple[float, float, float, float],
+    source: str,
+    *,
+    category: str = "timber",
+    assumed: str = "",
 ) -> Known:
+    """``row``: E0,mean in GPa, density, shear strength, strength across the grain; 0: unknown."""
+    e, density, fvk, across = row
     strength = {"fmk": fmk * MPA, "fvk": fvk * MPA}
-    return Known(grade, "timber", e * GPA, e * GPA / 16.0, density, 5e-6, strength, source, assumed)
+    if across:
+        strength["fc90k"] = across * MPA
+    return Known(grade, category, e * GPA, e * GPA / 16.0, density, 5e-6, strength, source, assumed)
+
+
+def _glulam_of(key: str, assumed: str) -> Known:
+    e, density = _GLULAM[key]
+    found = _timber_of(
+        f"GL{key}", float(key[:2]), (e, density, 3.5, _GLULAM_ACROSS),
+        "EN 14080, tables 4 and 5", category="glulam", assumed=assumed,
+    )  # fmt: skip
+    return found._replace(shear_modulus=0.65 * GPA)
 
 
 def _glulam(text: str, kind: str) -> Known | None:
@@ -248,12 +275,7 @@ def _glulam(text: str, kind: str) -> Known | None:
     key = match.group(1) + (match.group(2) or "h").lower()
     if key not in _GLULAM:
         return None
-    e, density = _GLULAM[key]
-    assumed = "" if match.group(2) else "homogeneous glulam (h)"
-    found = _timber_of(
-        f"GL{key}", float(match.group(1)), e, density, 3.5, "EN 14080, tables 4 and 5", assumed
-    )
-    return found._replace(shear_modulus=0.65 * GPA)
+    return _glulam_of(key, "" if match.group(2) else "homogeneous glulam (h)")
 
 
 def _sawn(text: str, kind: str) -> Known | None:
@@ -266,8 +288,11 @@ def _sawn(text: str, kind: str) -> Known | None:
     unmistakable = match.group(1) == "D" or grade in (14, 18, 22, 24, 27)
     if grade not in table or not (kind in ("timber", "hardwood") or unmistakable):
         return None
-    e, density, fvk = table[grade]
-    return _timber_of(f"{match.group(1)}{grade}", grade, e, density, fvk, "EN 338, tables 1 and 3")
+    category = "timber" if match.group(1) == "C" else "hardwood"
+    return _timber_of(
+        f"{match.group(1)}{grade}", grade, table[grade], "EN 338, tables 1 and 3",
+        category=category,
+    )  # fmt: skip
 
 
 def _german_timber(text: str, kind: str) -> Known | None:
@@ -276,10 +301,8 @@ def _german_timber(text: str, kind: str) -> Known | None:
     if match is None or kind not in ("timber", "glulam"):
         return None
     grade = {"7": 18, "10": 24, "13": 30}[match.group(1)]
-    e, density, fvk = _SOFTWOOD[grade]
-    return _timber_of(
-        f"S{match.group(1)} (C{grade})", grade, e, density, fvk, "EN 1912; EN 338, table 1"
-    )
+    name = f"S{match.group(1)} (C{grade})"
+    return _timber_of(name, grade, _SOFTWOOD[grade], "EN 1912; EN 338, table 1")
 
 
 def _ordinary(text: str, kind: str) -> Known | None:
@@ -287,10 +310,10 @@ def _ordinary(text: str, kind: str) -> Known | None:
     if kind == "steel":
         found = _steel("steel", 235.0, 360.0, "EN 1993-1-1, 3.2.6")
         return found._replace(assumed="steel of 210 GPa, strength of S235")
-    if kind == "stainless":
+    if kind == "stainless":  # a category of its own: the clauses for carbon steel do not hold
         e = 200.0 * GPA
         strength = {"fy": 210.0 * MPA, "fu": 520.0 * MPA}
-        return Known("stainless steel", "steel", e, e / 2.6, 7900.0, 16e-6, strength,
+        return Known("stainless steel", "stainless", e, e / 2.6, 7900.0, 16e-6, strength,
                      "EN 1993-1-4, 2.1.3", "strength of 1.4301")  # fmt: skip
     if kind == "aluminium":
         return Known("aluminium", "", 70.0 * GPA, 27.0 * GPA, 2700.0, 23e-6, {},
@@ -298,13 +321,15 @@ def _ordinary(text: str, kind: str) -> Known | None:
     if kind == "concrete":
         return concrete(25.0, "C25/30", "concrete of class C25/30")
     if kind == "glulam":
-        return _timber_of("GL24h", 24, 11.5, 420, 3.5, "EN 14080, table 5", "glulam of GL24h")
-    if kind == "lvl":
-        return _timber_of("LVL", 44, 13.8, 510, 4.1, "EN 14374", "LVL of 13.8 GPa")
+        return _glulam_of("24h", "glulam of GL24h")
+    if kind == "lvl":  # its strength across the grain depends on the product
+        return _timber_of("LVL", 44, (13.8, 510, 4.1, 0.0), "EN 14374", category="lvl",
+                          assumed="LVL of 13.8 GPa")  # fmt: skip
     if kind == "hardwood":
-        return _timber_of("D30", 30, 11.0, 640, 3.9, "EN 338, table 3", "hardwood of D30")
+        return _timber_of("D30", 30, _HARDWOOD[30], "EN 338, table 3", category="hardwood",
+                          assumed="hardwood of D30")  # fmt: skip
     if kind == "timber":
-        return _timber_of("C24", 24, 11.0, 420, 4.0, "EN 338, table 1", "softwood of C24")
+        return _timber_of("C24", 24, _SOFTWOOD[24], "EN 338, table 1", assumed="softwood of C24")
     return None
 
 
