@@ -178,7 +178,7 @@ _SYSTEMS: dict[str, dict[str, tuple[str, int]]] = {
     "metric": {
         "length": ("m", 3), "deflection": ("mm", 1), "force": ("kN", 2), "moment": ("kN*m", 2),
         "line load": ("kN/m", 2), "area load": ("kN/m2", 2), "stress": ("MPa", 1),
-        "section length": ("mm", 0), "area": ("cm2", 1), "inertia": ("cm4", 0),
+        "section length": ("mm", 1), "area": ("cm2", 1), "inertia": ("cm4", 0),
         "translational stiffness": ("kN/m", 0), "rotational stiffness": ("kN*m/rad", 0),
         "rotation": ("mrad", 3), "density": ("kg/m3", 0), "temperature difference": ("K", 1),
         "flexural rigidity": ("kN*m2", 0), "section modulus": ("cm3", 1), "warping": ("cm6", 0),
@@ -187,7 +187,7 @@ _SYSTEMS: dict[str, dict[str, tuple[str, int]]] = {
     "us": {
         "length": ("ft", 2), "deflection": ("in", 3), "force": ("kip", 2), "moment": ("kip*ft", 2),
         "line load": ("kip/ft", 3), "area load": ("psf", 1), "stress": ("ksi", 2),
-        "section length": ("in", 2), "area": ("in2", 2), "inertia": ("in4", 1),
+        "section length": ("in", 3), "area": ("in2", 2), "inertia": ("in4", 1),
         "translational stiffness": ("kip/in", 1), "rotational stiffness": ("kip*ft/rad", 0),
         "rotation": ("mrad", 3), "density": ("pcf", 0), "temperature difference": ("degF", 1),
         "flexural rigidity": ("kip*in2", 0), "section modulus": ("in3", 2), "warping": ("in6", 0),

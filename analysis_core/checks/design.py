@@ -146,11 +146,30 @@ class UnbracedSegment:
     moments: tuple[float, float, float, float, float]
     source: str
     free: bool = False
+    tip_moment: bool = False
+    """Whether a moment acts at the end that is free."""
 
     @property
     def length(self) -> float:
         """Length in m."""
         return self.end - self.start
+
+    @property
+    def buckling_length(self) -> float:
+        """Length to buckle over, m: twice the length under a moment at the end that is free.
+
+        A cantilever under uniform moment buckles as one half of a span of twice its length; under
+        loads along it, it carries more than a span of its own length does under uniform moment
+        (Timoshenko and Gere, Theory of Elastic Stability, 6.3; from memory).
+        """
+        return (2.0 if self.tip_moment else 1.0) * self.length
+
+    @property
+    def words(self) -> str:
+        """What bounds the length, for the working."""
+        free = ", one end of it free" if self.free else ""
+        twice = ": twice the length, for a moment acts at that end" if self.tip_moment else ""
+        return f"between restraints of the {self.flange} flange{free}{twice}"
 
 
 def segments(design: MemberDesign, field: EffectField) -> list[UnbracedSegment]:
@@ -172,11 +191,12 @@ def segments(design: MemberDesign, field: EffectField) -> list[UnbracedSegment]:
             quarter = np.linspace(start, end, 5)
             m0, m1, m2, m3, m4 = (float(m) for m in np.interp(quarter, x, moment))
             largest = float(moment[inside][index])
-            free = any(abs(p - e) < 1e-9 for p in held.loose for e in (start, end))
+            loose = [m for e, m in ((start, m0), (end, m4)) if _among(e, held.loose)]
+            tip = any(abs(m) > 1e-3 * abs(largest) for m in loose)
             out.append(
                 UnbracedSegment(
                     start, end, flange, largest, float(x[inside][index]), (m0, m1, m2, m3, m4),
-                    field.source, free,
+                    field.source, bool(loose), tip,
                 )
             )  # fmt: skip
     return out
@@ -187,6 +207,10 @@ def _lengths(design: MemberDesign, places: tuple[float, ...]) -> Iterator[tuple[
     for start, end in pairwise(sorted({*places, *design.restraints.loose})):
         if end > 1e-9 and start < design.length - 1e-9:
             yield start, end
+
+
+def _among(place: float, places: tuple[float, ...]) -> bool:
+    return any(abs(place - other) < 1e-9 for other in places)
 
 
 def _noise(moment: Floats) -> float:

@@ -12,6 +12,7 @@ import math
 from dataclasses import dataclass
 
 from analysis_core.checks.design import (
+    EffectField,
     MemberDesign,
     UnbracedSegment,
     is_stainless,
@@ -23,7 +24,12 @@ from analysis_core.checks.design import (
 )
 from analysis_core.checks.steel_aisc_axial import check_axial
 from analysis_core.checks.steel_aisc_hollow import check_hollow
-from analysis_core.checks.steel_aisc_parts import FIGURES, NOT_COVERED, available_strength
+from analysis_core.checks.steel_aisc_parts import (
+    FIGURES,
+    NOT_COVERED,
+    available_strength,
+    with_design_walls,
+)
 from analysis_core.checks.working import Check, Figures, Working, not_checked
 
 __all__ = ["FIGURES", "check_steel"]
@@ -95,13 +101,22 @@ def check_steel(design: MemberDesign, figures: Figures, *, allowable: bool = Fal
             return [not_checked("steel strength", reason, "AISC 360, F4")]
     if reason := unlike_profile(section):
         return [not_checked("steel strength", reason, "AISC 360")]
+    design = with_design_walls(design, figures)
+    hollow = section.shape not in ("I", "channel")
     flexure = (
-        check_flexure(design, figures, fy, allowable)
-        if section.shape in ("I", "channel")
-        else check_hollow(design, figures, fy, allowable)
+        check_hollow(design, figures, fy, allowable)
+        if hollow
+        else check_flexure(design, figures, fy, allowable)
     )
     shear = _shear(design, figures, fy, allowable)
-    return [flexure, shear, *check_axial(design, figures, fy, flexure, allowable=allowable)]
+
+    def under(field: EffectField) -> tuple[float, float]:
+        if hollow:
+            return float(abs(field.moment).max()), flexure.resistance
+        return _worst_under(design, figures, fy, field, allowable)
+
+    axial = check_axial(design, figures, fy, flexure, under, allowable=allowable)
+    return [flexure, shear, *axial]
 
 
 def shape_of(design: MemberDesign) -> IShape:
@@ -178,14 +193,26 @@ def check_flexure(design: MemberDesign, f: Figures, fy: float, allowable: bool) 
     if s.channel and s.bf / s.tf > 0.38 * math.sqrt(e / fy):
         reason = "The flanges of the channel are not compact; that is not covered."
         return not_checked("flexure", reason, "AISC 360, Table B4.1b")
-    found: Check | None = None
-    for field in design.fields:
-        for segment in segments(design, field):
-            check = _segment(s, f, fy, segment, allowable)
-            if found is None or check.use > found.use:
-                found = check
-    section = _section(design, s, f, fy, allowable)
-    return section if found is None or section.use > found.use else found
+    found = [
+        _segment(s, f, fy, segment, allowable)
+        for field in design.fields
+        for segment in segments(design, field)
+    ]
+    return max([*found, _section(design, s, f, fy, allowable)], key=lambda check: check.use)
+
+
+def _worst_under(
+    design: MemberDesign, f: Figures, fy: float, field: EffectField, allowable: bool
+) -> tuple[float, float]:
+    """Moment and available strength of the length that uses most of it under one field."""
+    s = shape_of(design)
+    found = [
+        (abs(segment.largest), _segment(s, f, fy, segment, allowable).resistance)
+        for segment in segments(design, field)
+    ]
+    local = available_strength(Working(), f, "b", _local(Working(), s, f["E"], fy), allowable)
+    found.append((float(abs(field.moment).max()), local))
+    return max(found, key=lambda pair: pair[0] / pair[1])
 
 
 def _section(design: MemberDesign, s: IShape, f: Figures, fy: float, allowable: bool) -> Check:
@@ -218,9 +245,8 @@ def _segment(s: IShape, f: Figures, fy: float, segment: UnbracedSegment, allowab
     w, e = Working(), f["E"]
     local = _local(w, s, e, fy)
     lp, lr = limiting_lengths(s, e, fy)
-    lb = w.step("L_b", "", segment.length, "length", "",
-                note=f"between restraints of the {segment.flange} flange"
-                + (", one end of it free" if segment.free else ""))  # fmt: skip
+    words = segment.words + (f"; times k_L = {f['k_L']:g}" if f["k_L"] != 1.0 else "")
+    lb = w.step("L_b", "", f["k_L"] * segment.buckling_length, "length", "", note=words)
     w.step("L_p", "1.76 {r_y} √({E}/{F_y})", lp, "length", "(F2-5)",
            r_y=(s.ry, "section length"), E=(e, "stress"), F_y=(fy, "stress"))  # fmt: skip
     w.step("L_r", "1.95 {r_ts} {E}/(0.7 {F_y}) √(x + √(x² + 6.76 (0.7 {F_y}/{E})²))", lr,

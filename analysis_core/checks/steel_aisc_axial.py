@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 
 from analysis_core.checks.design import (
     NEGLIGIBLE,
@@ -21,12 +22,17 @@ _NOT_COVERED = (
 )
 
 
+Flexure = Callable[[EffectField], tuple[float, float]]
+"""Moment and available strength of the length that uses most of it under a field, N·m."""
+
+
 def check_axial(
-    design: MemberDesign, f: Figures, fy: float, flexure: Check, *, allowable: bool
+    design: MemberDesign, f: Figures, fy: float, flexure: Check, under: Flexure, *, allowable: bool
 ) -> list[Check]:
     """Return the interaction check; none where the axial force is next to nothing.
 
-    ``flexure`` is the check whose available strength stands for M_c.
+    ``flexure`` is the check of flexure alone; ``under`` gives M_r and M_c under each field, for
+    what governs flexure alone need not govern beside an axial force.
     """
     low, high = design.axial
     if max(high, -low) <= NEGLIGIBLE * design.section.area * fy:
@@ -38,7 +44,7 @@ def check_axial(
         if slender or design.section.shape == "channel":
             reason = slender or "Channels may buckle by twisting (E4); that is not covered."
             return [not_checked(_NAME, reason, _CLAUSE)]
-    return [_interaction(design, f, fy, flexure, allowable)]
+    return [_interaction(design, f, fy, under, allowable)]
 
 
 def critical_stress(elastic: float, fy: float) -> float:
@@ -56,7 +62,7 @@ def interaction(axial: float, flexure: float) -> float:
 
 
 def _interaction(
-    design: MemberDesign, f: Figures, fy: float, flexure: Check, allowable: bool
+    design: MemberDesign, f: Figures, fy: float, under: Flexure, allowable: bool
 ) -> Check:
     w, area, e = Working(), design.section.area, f["E"]
     slender = _slenderness(design, w)
@@ -68,21 +74,29 @@ def _interaction(
     )  # fmt: skip
     compression = w.step("P_c", "", factors[0] * stress * area, "force", "E1, (E3-1)")
     tension = w.step("T_c", "", factors[1] * fy * area, "force", "D2(a)", note="yielding")
-    worst: tuple[float, EffectField, float, float] | None = None
+    worst: tuple[float, EffectField, float, float, float] | None = None
     for field in design.fields:
-        moment = float(abs(field.moment).max())
+        moment, strength = under(field)
         for force in field.axial:
             share = -force / compression if force < 0.0 else force / tension
-            use = interaction(share, moment / flexure.resistance)
+            use = interaction(share, moment / strength)
             if worst is None or use > worst[0]:
-                worst = use, field, force, moment
+                worst = use, field, force, moment, strength
     if worst is None:
         return not_checked(_NAME, "No strength combination was found.", _CLAUSE)
-    use, field, force, moment = worst
+    use, field, force, moment, strength = worst
     w.step("P_r", "", force, "force", "", note="tension positive")
-    w.step("M_r", "", moment, "moment", "", note="the largest along the member")
-    w.step("M_c", "", flexure.resistance, "moment", "F", note="as for flexure")
-    w.step("sum", "", use, "", "(H1-1a), (H1-1b)", note="at most 1")
+    w.step("M_r", "", moment, "moment", "", note="with M_c, the length that uses most of it")
+    w.step("M_c", "", strength, "moment", "F", note="as for flexure, under this combination")
+    share = -force / compression if force < 0.0 else force / tension
+    axial = (abs(force), "force"), (compression if force < 0.0 else tension, "force")
+    bending = {"M_r": (moment, "moment"), "M_c": (strength, "moment")}
+    if share >= 0.2:
+        w.step("sum", "{P_r} / {P_c} + 8/9 · {M_r} / {M_c}", use, "", "(H1-1a)", note="at most 1",
+               P_r=axial[0], P_c=axial[1], **bending)  # fmt: skip
+    else:
+        w.step("sum", "{P_r} / (2 {P_c}) + {M_r} / {M_c}", use, "", "(H1-1b)", note="at most 1",
+               P_r=axial[0], P_c=axial[1], **bending)  # fmt: skip
     return w.check(
         _NAME, _CLAUSE, demand=use, resistance=1.0, quantity="", source=field.source,
         not_covered=_NOT_COVERED,

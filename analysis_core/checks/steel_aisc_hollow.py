@@ -14,7 +14,9 @@ def check_hollow(design: MemberDesign, f: Figures, fy: float, allowable: bool) -
     """Return the check of a hollow section in flexure (F7, F8)."""
     w = Working()
     tube = design.section.shape == "tube"
-    nominal = _tube(design, fy, f["E"], w) if tube else _box(design, fy, f["E"], w)
+    w.step("t", "", plates(design.section)["wall_thickness"], "section length", "B4.2",
+           note="design wall; section properties shrink as it does")  # fmt: skip
+    nominal = _tube(design, fy, f["E"], w) if tube else _box(design, f, fy, w)
     clause = "AISC 360, F8" if tube else "AISC 360, F7"
     if nominal is None:
         reason = "The walls are slender; effective widths (F7.2(c), F7.3(c), F8.2) are not covered."
@@ -60,8 +62,8 @@ def _tube(design: MemberDesign, fy: float, e: float, w: Working) -> float | None
     return None if nominal is None else w.step("M_n", "", nominal, "moment", "(F8-1), (F8-2)")
 
 
-def _box(design: MemberDesign, fy: float, e: float, w: Working) -> float | None:
-    d, section = plates(design.section), design.section
+def _box(design: MemberDesign, f: Figures, fy: float, w: Working) -> float | None:
+    d, section, e = plates(design.section), design.section, f["E"]
     t, plastic, elastic = d["wall_thickness"], d["plastic_modulus"], _elastic(d)
     root = math.sqrt(e / fy)
     flange = w.step("b/t", "", section.width / t - 3.0, "", "Table B4.1b",
@@ -75,18 +77,17 @@ def _box(design: MemberDesign, fy: float, e: float, w: Working) -> float | None:
         return None
     if nominal < fy * plastic:
         w.step("M_n", "", nominal, "moment", "(F7-2), (F7-6)", note="walls not compact")
-    return min(nominal, _box_lateral(design, fy, e, w, elastic, fy * plastic))
+    return min(nominal, _box_lateral(design, f, fy, w, elastic))
 
 
 def _elastic(d: Mapping[str, float]) -> float:
     return min(d["section_modulus_top"], d["section_modulus_bottom"])
 
 
-def _box_lateral(
-    design: MemberDesign, fy: float, e: float, w: Working, elastic: float, mp: float
-) -> float:
+def _box_lateral(design: MemberDesign, f: Figures, fy: float, w: Working, elastic: float) -> float:
     """F7.4 with C_b = 1, over the whole stretch between places where both flanges are held."""
-    section, lb = design.section, lateral_length(design)
+    section, lb = design.section, f["k_L"] * lateral_length(design)
+    e, mp = f["E"], fy * plates(section)["plastic_modulus"]
     if section.depth <= section.width:  # bent about its weak axis, or square
         return mp
     ry = math.sqrt(section.inertia_lateral / section.area)

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
 
+from analysis_core.checks.design import MemberDesign
 from analysis_core.checks.working import Figure, Figures, Working
 
 FIGURES: Mapping[str, Figure] = {
@@ -17,9 +19,38 @@ FIGURES: Mapping[str, Figure] = {
     "Omega_c": Figure(1.67, "AISC 360, E1", "safety factor for compression"),
     "phi_t": Figure(0.90, "AISC 360, D2(a)", "resistance factor for tension, yielding"),
     "Omega_t": Figure(1.67, "AISC 360, D2(a)", "safety factor for tension, yielding"),
+    "t_design": Figure(0.93, "AISC 360, B4.2", "design wall over nominal wall of hollow sections; "
+                       "1 where the model gives design walls, or for A1085 by its name"),
+    "k_L": Figure(1.0, "common practice", "on unbraced lengths, where loads act above the shear "
+                  "centre and may move sideways: of the project"),
     "E": Figure(29000 * 6894757.293168361, "AISC 360, symbols", "modulus of elasticity, Pa"),
-}
-NOT_COVERED = "Not covered: torsion, biaxial bending, concentrated forces on the web."
+}  # fmt: skip
+NOT_COVERED = (
+    "Not covered: torsion, biaxial bending, concentrated forces on the web, holes in flanges, "
+    "loads above the shear centre (replace k_L)."
+)
+
+
+def with_design_walls(design: MemberDesign, f: Figures) -> MemberDesign:
+    """Return a hollow member with its design wall thickness (B4.2).
+
+    Areas and moduli shrink as the wall does, which is a little more than they do in truth.
+    """
+    if design.section.shape not in ("tube", "hollow rectangle"):
+        return design
+    part = 1.0 if "1085" in design.material.name else f["t_design"]
+    walls = ("wall_thickness", "section_modulus_top", "section_modulus_bottom", "plastic_modulus")
+    dimensions = tuple(
+        (name, value * part if name in walls else value)
+        for name, value in design.section.dimensions
+    )
+    section = design.section
+    changed = replace(
+        section, area=part * section.area, inertia=part * section.inertia,
+        inertia_lateral=part * section.inertia_lateral, torsion=part * section.torsion,
+        dimensions=dimensions,
+    )  # fmt: skip
+    return replace(design, section=changed)
 
 
 def available_strength(w: Working, f: Figures, kind: str, nominal: float, allowable: bool) -> float:

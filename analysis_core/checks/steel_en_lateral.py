@@ -17,8 +17,8 @@ from analysis_core.checks.working import Check, Figures, Working
 IMPERFECTION = {"a": 0.21, "b": 0.34, "c": 0.49, "d": 0.76}  # Tables 6.1 and 6.3
 _NAME = "lateral torsional buckling"
 _NOT_COVERED = (
-    "Not covered: loads above the shear centre (destabilising), f of (6.58), Wagner's effect of "
-    "unequal flanges."
+    "Loads count as acting at the shear centre; where they act above it and nothing holds them "
+    "sideways, replace k_L. f of (6.58) is left out, on the safe side."
 )
 
 
@@ -40,9 +40,9 @@ def buckling(
 ) -> Check:
     """Return the check of one unbraced segment."""
     w = Working()
-    free = ", one end of it free" if segment.free else ""
-    w.step("L", "", segment.length, "length", "",
-           note=f"between restraints of the {segment.flange} flange{free}")  # fmt: skip
+    length = f["k_L"] * segment.buckling_length
+    words = segment.words + (f"; times k_L = {f['k_L']:g}" if f["k_L"] != 1.0 else "")
+    w.step("L", "", length, "length", "", note=words)
     chi = _reduction(design, f, fy, class_, segment, w)
     plastic, elastic = moduli(design)
     modulus = plastic if class_ <= 2 else elastic
@@ -83,7 +83,7 @@ def _reduction(
     """χ_LT of a segment, written down where there is a working to write it in."""
     section, iw = design.section, plates(design.section).get("warping", 0.0)
     e, g = design.material.elastic_modulus, design.material.usable_shear_modulus
-    c1, length = moment_gradient(segment), segment.length
+    c1, length = moment_gradient(segment), f["k_L"] * segment.buckling_length
     critical = critical_moment(
         c1, length, e=e, g=g, iz=section.inertia_lateral, it=section.torsion, iw=iw
     )

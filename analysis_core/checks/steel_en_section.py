@@ -2,8 +2,8 @@
 
 Symbols are those of the standard.  Clauses are written from memory of it and marked as not
 confirmed.  Covered: rolled and welded I and H sections, channels, rectangular and circular hollow
-sections of classes 1 to 3, bent about the strong axis.  Sections without a fillet radius count as
-welded.
+sections of classes 1 to 3, bent about the strong axis; webs that buckle in shear by EN 1993-1-5,
+5.2, stiffened at the supports alone.  Sections without a fillet radius count as welded.
 """
 
 from __future__ import annotations
@@ -30,6 +30,8 @@ FIGURES: Mapping[str, Figure] = {
     "lambda_LT0": Figure(0.4, "EN 1993-1-1, 6.3.2.3(1)", "plateau of lateral torsional buckling",
                          national=True),
     "beta": Figure(0.75, "EN 1993-1-1, 6.3.2.3(1)", "factor of the rolled curves", national=True),
+    "k_L": Figure(1.0, "common practice", "on unbraced lengths; 1.2 where loads act above the "
+                  "shear centre and may move sideways, 2.5 at free ends: of the project"),
     "L_cr_y": Figure(1.0, "EN 1993-1-1, 5.2.2(7), 6.3.1.3", "buckling length in the plane over the "
                      "member's length: of the project"),
 }  # fmt: skip
@@ -37,6 +39,7 @@ FIGURES: Mapping[str, Figure] = {
 _COVERED = ("I", "channel", "hollow rectangle", "tube")
 # Table 3.1: yield strength in MPa of thicknesses over 40 mm up to 80 mm, by that up to 40 mm.
 _THICK = {235: 215.0, 275: 255.0, 355: 335.0, 420: 390.0, 450: 410.0, 460: 430.0}
+_STRONGEST = 460.5e6  # 3.1(2), Table 3.1: grades up to S460
 NOT_COVERED = "Not covered: torsion, biaxial bending, transverse forces on the web, holes."
 
 
@@ -122,6 +125,8 @@ def outside(design: MemberDesign) -> str:
         )
     if is_stainless(design.material):
         return f"'{design.material.name}' is stainless; EN 1993-1-4 is not covered."
+    if strength_of(design.material, "fy") > _STRONGEST:
+        return f"'{design.material.name}' is stronger than S460; EN 1993-1-12 is not covered."
     d = plates(section)
     needed = {"I": "flange_thickness", "channel": "flange_thickness"}.get(section.shape)
     if needed and needed not in d:
@@ -241,13 +246,54 @@ def shear_area(design: MemberDesign, eta: float) -> float:
 
 
 def shear_resistance_of(design: MemberDesign, f: Figures, fy: float, w: Working) -> float:
-    """Return V_pl,Rd in N and write it down."""
+    """Return V_pl,Rd in N, or V_b,Rd where the web buckles before, and write it down."""
     area = w.step("A_v", "", shear_area(design, f["eta"]), "area", "6.2.6(3)",
                   note="shear area of the section")  # fmt: skip
-    return w.step(
+    plastic = w.step(
         "V_pl,Rd", "{A_v} ({f_y} / √3) / {gamma_M0}", area * fy / math.sqrt(3.0) / f["gamma_M0"],
         "force", "6.2.6(2), (6.18)",
         A_v=(area, "area"), f_y=(fy, "stress"), gamma_M0=(f["gamma_M0"], ""),
+    )  # fmt: skip
+    ratio, limit = web_slenderness(design, f, fy)
+    if ratio <= limit:
+        return plastic
+    return min(plastic, _buckling_shear(design, f, fy, ratio, w))
+
+
+def web_slenderness(design: MemberDesign, f: Figures, fy: float) -> tuple[float, float]:
+    """Return h_w/t_w and the ratio up to which the web does not buckle in shear (6.22)."""
+    d = plates(design.section)
+    limit = 72.0 * math.sqrt(235e6 / fy) / f["eta"]
+    if design.section.shape == "tube":
+        return 0.0, limit
+    if design.section.shape == "hollow rectangle":
+        return web_height(design) / web_thickness(d), limit
+    return (d["depth"] - 2.0 * d["flange_thickness"]) / d["web_thickness"], limit
+
+
+def _buckling_shear(design: MemberDesign, f: Figures, fy: float, ratio: float, w: Working) -> float:
+    """V_b,Rd of the web alone, stiffened at the supports alone (EN 1993-1-5, 5.2, 5.3), N.
+
+    Non-rigid end posts; the part of the flanges is left out, on the safe side.
+    """
+    d = plates(design.section)
+    webs = 2.0 if design.section.shape == "hollow rectangle" else 1.0
+    thickness = web_thickness(d)
+    height = ratio * thickness
+    epsilon = math.sqrt(235e6 / fy)
+    slender = w.step(
+        "λ_w", "{h_w} / (86.4 {t_w} {ε})", ratio / (86.4 * epsilon), "",
+        "EN 1993-1-5, 5.3(3), (5.5)", h_w=(height, "section length"),
+        t_w=(thickness, "section length"), ε=(epsilon, ""),
+    )  # fmt: skip
+    chi = w.step("χ_w", "0.83 / λ_w ≤ η", min(f["eta"], 0.83 / slender), "",
+                 "EN 1993-1-5, Table 5.1", note="end posts not rigid")  # fmt: skip
+    return w.step(
+        "V_bw,Rd", "{chi_w} {f_y} {h_w} {t_w} / (√3 {gamma_M1})",
+        chi * fy * height * webs * thickness / (math.sqrt(3.0) * f["gamma_M1"]), "force",
+        "EN 1993-1-5, 5.2(1), (5.2)", chi_w=(chi, ""), f_y=(fy, "stress"),
+        h_w=(height, "section length"), t_w=(webs * thickness, "section length"),
+        gamma_M1=(f["gamma_M1"], ""),
     )  # fmt: skip
 
 
@@ -255,23 +301,17 @@ def check_shear(design: MemberDesign, f: Figures, fy: float) -> Check:
     """Return the check of the cross-section in shear (6.2.6)."""
     w = Working()
     worst = design.governing.shear
-    d = plates(design.section)
-    if design.section.shape != "tube":
-        web = web_height(design) / web_thickness(d)
-        if design.section.shape != "hollow rectangle":
-            web = (d["depth"] - 2.0 * d["flange_thickness"]) / d["web_thickness"]
-        limit = 72.0 * math.sqrt(235e6 / fy) / f["eta"]
-        w.step("h_w/t_w", "", web, "", "6.2.6(6), (6.22)", note=f"shear buckling above {limit:.1f}")
-        if web > limit:
-            reason = (
-                f"The web ratio {web:.1f} exceeds {limit:.1f}; shear buckling (EN 1993-1-5) is not "
-                f"covered."
-            )
-            return not_checked("shear", reason, "EN 1993-1-1, 6.2.6(6)")
+    ratio, limit = web_slenderness(design, f, fy)
+    words = ""
+    if ratio:
+        w.step("h_w/t_w", "", ratio, "", "6.2.6(6), (6.22)",
+               note=f"shear buckling above {limit:.1f}")  # fmt: skip
+    if ratio > limit:
+        words = " The web needs transverse stiffeners at the supports (EN 1993-1-5, 5.1(2))."
     resistance = shear_resistance_of(design, f, fy, w)
     return w.check(
         "shear", "EN 1993-1-1, 6.2.6", demand=worst.value, resistance=resistance,
-        quantity="force", x=worst.x, source=worst.source, not_covered=NOT_COVERED,
+        quantity="force", x=worst.x, source=worst.source, not_covered=NOT_COVERED + words,
     )  # fmt: skip
 
 
@@ -299,14 +339,12 @@ def check_bending_and_shear(design: MemberDesign, f: Figures, fy: float, class_:
     _, moment, resistance, x, acting, source = worst
     w = Working()
     share = w.step(
-        "v", "{V_Ed} / {V_pl}", acting / shear_resistance, "", "6.2.8(2)",
-        V_Ed=(acting, "force"), V_pl=(shear_resistance, "force"),
+        "v", "{V_Ed} / {V_Rd}", acting / shear_resistance, "", "6.2.8(2)",
+        V_Ed=(acting, "force"), V_Rd=(shear_resistance, "force"),
     )  # fmt: skip
     if share > 0.5:
         rho = w.step("ρ", "(2 {v} - 1)²", (2.0 * share - 1.0) ** 2, "", "6.2.8(3)", v=(share, ""))
-        w.step(
-            "M_V,Rd", "", resistance, "moment", "6.2.8(3), (5)", note=f"reduced by ρ = {rho:.3f}"
-        )
+        _reduced_step(design, f, fy, class_, rho, resistance, w)
     else:
         w.step("M_V,Rd", "", resistance, "moment", "6.2.8(2)", note="no reduction up to one half")
     return w.check(
@@ -315,8 +353,31 @@ def check_bending_and_shear(design: MemberDesign, f: Figures, fy: float, class_:
     )  # fmt: skip
 
 
+def _reduced_step(
+    design: MemberDesign, f: Figures, fy: float, class_: int, rho: float, value: float, w: Working
+) -> None:
+    d, (plastic, elastic) = plates(design.section), moduli(design)
+    if design.section.shape == "I" and class_ <= 2:
+        tw = d["web_thickness"]
+        w.step(
+            "M_V,Rd", "({W_pl} - {rho} {A_w}² / (4 {t_w})) {f_y} / {gamma_M0} ≤ M_c,Rd", value,
+            "moment", "6.2.8(5), (6.30)", W_pl=(plastic, "section modulus"), rho=(rho, ""),
+            A_w=((d["depth"] - 2.0 * d["flange_thickness"]) * tw, "area"),
+            t_w=(tw, "section length"), f_y=(fy, "stress"), gamma_M0=(f["gamma_M0"], ""),
+        )  # fmt: skip
+        return
+    w.step(
+        "M_V,Rd", "(1 - {rho}) {W} {f_y} / {gamma_M0}", value, "moment", "6.2.8(3)",
+        rho=(rho, ""), W=(plastic if class_ <= 2 else elastic, "section modulus"),
+        f_y=(fy, "stress"), gamma_M0=(f["gamma_M0"], ""),
+    )  # fmt: skip
+
+
 def reduced_moment(design: MemberDesign, f: Figures, fy: float, class_: int, share: float) -> float:
-    """Return M_V,Rd (N·m) for a shear of ``share`` of V_pl,Rd (6.2.8(3), (5))."""
+    """Return M_V,Rd (N·m) for a shear of ``share`` of its resistance (6.2.8(3), (5)).
+
+    Where the web buckles in shear, the same with V_bw,Rd is EN 1993-1-5, 7.1(1), on the safe side.
+    """
     full = moment_resistance_of(design, f, fy, class_, Working())
     rho = (2.0 * share - 1.0) ** 2 if share > 0.5 else 0.0
     if rho >= 1.0:

@@ -5,7 +5,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from designs import IPE300, S355, box, pressed, rectangle, simple_span, tube
+from designs import IPE300, S355, box, i_section, pressed, rectangle, simple_span, tube
 from scipy.linalg import eigh
 from scipy.optimize import brentq
 
@@ -317,3 +317,78 @@ def test_a_column_held_all_along_is_governed_in_its_plane_with_its_factor():
     assert check.use == pytest.approx(n + k * 62.5e3 / (628.4e-6 * 355e6), rel=1e-6)
     assert steel_en_axial.interaction_factor(3, 0.5, 0.4) == pytest.approx(1 + 0.6 * 0.5 * 0.4)
     assert steel_en_axial.interaction_factor(1, 2.0, 0.4) == pytest.approx(1.32)
+
+
+def plate_girder(h, b, tw, tf):
+    """A welded I from plates."""
+    hw = h - 2 * tf
+    iy = (b * h**3 - (b - tw) * hw**3) / 12
+    wpl = b * tf * (h - tf) + tw * hw**2 / 4
+    iz = (2 * tf * b**3 + hw * tw**3) / 12
+    return i_section(
+        "PG", h, b, tw, tf, 0.0, area=2 * b * tf + hw * tw, iy=iy, iz=iz,
+        it=(2 * b * tf**3 + hw * tw**3) / 3, iw=iz * (h - tf) ** 2 / 4, wpl=wpl, wel=2 * iy / h,
+    )  # fmt: skip
+
+
+def test_a_slender_web_buckles_in_shear_as_the_theory_of_plates_says():
+    girder = plate_girder(0.84, 0.20, 0.008, 0.020)  # h_w/t_w = 100, c/t of class 3 in S355
+    checks = {
+        c.name: c
+        for c in steel_en.check_steel(
+            simple_span(girder, S355, 4.0, 300e3, continuous=True), FIGURES
+        )
+    }
+    # tau_cr = 5.34 pi² E / (12 (1 - nu²)) (t/h)² of a long plate in shear, simply supported
+    # (Timoshenko and Gere); EN 1993-1-5, Table 5.1: chi = 0.83 sqrt(tau_cr / (fy / sqrt 3)).
+    elastic = 5.34 * math.pi**2 * 210e9 / (12 * 0.91) / 100**2
+    slender = math.sqrt(355e6 / math.sqrt(3) / elastic)
+    expected = 0.83 / slender * 355e6 / math.sqrt(3) * 0.8 * 0.008
+    shear = checks["shear"]
+    assert slender > 0.83
+    assert shear.resistance == pytest.approx(expected, rel=0.005)
+    assert "stiffeners at the supports" in shear.not_covered
+    # Beside bending the same resistance counts: 300 kN/m on 4 m, 600 kN at the support.
+    beside = {s.symbol: s.value for s in checks["bending with shear"].steps}
+    assert beside["v"] > 0.5 or beside["M_V,Rd"] == pytest.approx(checks["bending"].resistance)
+    assert shear.use == pytest.approx(600e3 / expected, rel=0.005)
+
+
+@pytest.mark.parametrize(("fy", "covered"), [(460e6, True), (500e6, False), (690e6, False)])
+def test_grades_above_s460_are_not_checked(fy, covered):
+    strong = replace(S355, name="X", strength=(("fy", fy),))
+    checks = steel_en.check_steel(simple_span(IPE300, strong, 6.0, 1e3), FIGURES)
+    assert (checks[0].status == "not checked") is not covered
+    assert covered or "EN 1993-1-12" in checks[0].reason
+
+
+def test_a_moment_at_the_free_end_buckles_a_cantilever_over_twice_its_length():
+    """Cantilever under uniform moment: M_cr = pi/(2 L) sqrt(E Iz G It) for a narrow rectangle."""
+    length, x = 3.0, np.linspace(0.0, 3.0, 41)
+    narrow = replace(IPE300, dimensions=tuple({**dict(IPE300.dimensions), "warping": 0.0}.items()))
+
+    def critical(moment):
+        design = replace(
+            simple_span(narrow, S355, length, 1e3),
+            fields=(EffectField("U1", x, moment, np.zeros(41)),),
+            restraints=Restraints((0.0,), (0.0,), loose=(length,)),
+        )
+        return critical_of(design)
+
+    torsion = 81e9 * narrow.torsion
+    half = math.pi / (2 * length) * math.sqrt(210e9 * narrow.inertia_lateral * torsion)
+    assert critical(np.full(41, -10e3)) == pytest.approx(half, rel=1e-9)
+    # Loads along it, none at the tip: at least what its length carries under uniform moment.
+    assert critical(-5e3 * (length - x)) == pytest.approx(2 * half, rel=1e-9)
+
+
+def test_the_project_may_lengthen_unbraced_lengths_for_loads_above_the_shear_centre():
+    design = simple_span(IPE300, S355, 6.0, 5e3)
+    plain, high = (
+        next(c for c in steel_en.check_steel(design, Figures(steel_en.FIGURES, changes))
+             if c.name == "lateral torsional buckling")
+        for changes in ({}, {"k_L": 1.2})
+    )  # fmt: skip
+    longer = next(s.value for s in high.steps if s.symbol == "L")
+    assert longer == pytest.approx(7.2)
+    assert high.resistance < plain.resistance
