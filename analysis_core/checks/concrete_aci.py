@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
+from dataclasses import dataclass
 
 from analysis_core.checks.concrete_parts import ConcreteShape, bar_depth, outside, shape_of
 from analysis_core.checks.design import MemberDesign, strength_of
@@ -23,6 +24,12 @@ FIGURES: Mapping[str, Figure] = {
     "f_y": Figure(60e3 * PSI, "ACI 318-19, 20.2.2", "yield strength of reinforcement, Pa"),
     "E_s": Figure(29e6 * PSI, "ACI 318-19, 20.2.2.2", "modulus of reinforcement, Pa"),
     "lambda": Figure(1.0, "ACI 318-19, 19.2.4", "lightweight concrete"),
+    "rho_max": Figure(
+        0.025,
+        "ACI 318-19, 18.6.3.1",
+        "most tension reinforcement over b_w d: set for "
+        "special moment frames, taken as practical here",
+    ),
     "cover": Figure(1.5 * _INCH, "ACI 318-19, 20.5.1", "cover, m: of the project"),
     "link": Figure(0.375 * _INCH, "project", "diameter of stirrups, m"),
     "bar": Figure(0.75 * _INCH, "project", "diameter of main bars, m"),
@@ -33,7 +40,24 @@ _RATIOS = {
     1: (18.5, "one end continuous"),
     2: (21.0, "both ends continuous"),
 }
-_NOT_COVERED = "Not covered: torsion, development, crack control, fire."
+_NOT_COVERED = (
+    "Not covered: torsion, development, crack control, bars in a second layer, fire, deflections "
+    "by calculation (24.2.3)."
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Flexure:
+    """Required reinforcement in tension and in compression, m²; inf where none suffices.
+
+    ``within``: the moment M_n that needs none in compression, N·m; ``stress`` in it, less that of
+    the concrete it displaces, Pa.
+    """
+
+    tension: float
+    compression: float
+    within: float
+    stress: float
 
 
 def check_concrete(design: MemberDesign, figures: Figures) -> list[Check]:
@@ -52,6 +76,7 @@ def check_concrete(design: MemberDesign, figures: Figures) -> list[Check]:
         _bending("sagging reinforcement", design, figures, fc, governing.sagging, bottom=True),
         _bending("hogging reinforcement", design, figures, fc, governing.hogging, bottom=False),
         _shear(design, figures, fc),
+        _redistribution(design, figures, fc),
         _least_depth(design, figures),
     ]
     return [check for check in checks if check is not None]
@@ -105,13 +130,58 @@ def largest_area(
     fy: float,
     e_s: float,
     flange: tuple[float, float] | None = None,
+    strain: float = 0.0,
 ) -> float:
-    """Return the reinforcement at which ε_t = ε_ty + 0.003 (9.3.3.1), m²."""
-    c = d * 0.003 / (0.003 + fy / e_s + 0.003)
+    """Return the reinforcement at which ε_t = ε_ty + 0.003 (9.3.3.1) or ``strain``, m²."""
+    c = d * 0.003 / (0.003 + max(fy / e_s + 0.003, strain))
     a = stress_block_factor(fc) * c
     wide, deep = flange or (b, 0.0)
     block = wide * a if a <= deep else (wide - b) * deep + b * a
     return 0.85 * fc * block / fy
+
+
+def required_reinforcement(
+    moment: float,
+    *,
+    b: float,
+    d: float,
+    d2: float,
+    fc: float,
+    fy: float,
+    phi: float,
+    e_s: float,
+    flange: tuple[float, float] | None = None,
+    strain: float = 0.0,
+) -> Flexure:
+    """Return the reinforcement for a factored moment, with bars in compression where it takes them.
+
+    ``d2``: their depth from the compressed edge.  The neutral axis stays where ε_t is that of
+    9.3.3.1, or ``strain`` where that is more.
+    """
+    most = largest_area(b=b, d=d, fc=fc, fy=fy, e_s=e_s, flange=flange, strain=strain)
+    tension = required_area(moment, b=b, d=d, fc=fc, fy=fy, phi=phi, flange=flange)
+    if tension <= most * (1.0 + 1e-12):
+        return Flexure(tension, 0.0, math.inf, 0.0)
+    within = _moment_of(most, b=b, d=d, fc=fc, fy=fy, flange=flange)
+    c = d * 0.003 / (0.003 + max(fy / e_s + 0.003, strain))
+    stress = min(fy, e_s * 0.003 * (c - d2) / c) - 0.85 * fc
+    if stress <= 0.0 or d <= d2:
+        return Flexure(math.inf, math.inf, within, 0.0)
+    compression = (moment / phi - within) / (stress * (d - d2))
+    return Flexure(most + compression * stress / fy, compression, within, stress)
+
+
+def _moment_of(
+    area: float, *, b: float, d: float, fc: float, fy: float, flange: tuple[float, float] | None
+) -> float:
+    """M_n of a rectangle or T that is reinforced in tension alone, N·m."""
+    wide, deep = flange or (b, 0.0)
+    sides = min(0.85 * fc * (wide - b) * deep, area * fy)
+    block = area * fy - sides
+    if wide > b and area * fy <= 0.85 * fc * wide * deep:
+        return nominal_moment(area, b=wide, d=d, fc=fc, fy=fy)
+    a = block / (0.85 * fc * b)
+    return sides * (d - deep / 2.0) + block * (d - a / 2.0)
 
 
 def effective_flange(shape: ConcreteShape, length: float) -> float:
@@ -142,12 +212,13 @@ def _bending(
     w.step("β1", "", stress_block_factor(fc), "", "Table 22.2.2.4.3")
     if flange:
         w.step("b_f", "", flange[0], "section length", "Table 6.3.2.1", note="effective flange")
-    needed = w.step(
-        "A_s", "0.85 f'c b (d - √(d² - 2 M_u / (φ 0.85 f'c b))) / f_y",
-        required_area(moment, b=bw, d=d, fc=fc, fy=f["f_y"], phi=f["phi_t"], flange=flange),
-        "area", "22.2, 22.3",
-        note=f"φ = {f['phi_t']:g}, tension-controlled",
+    strain, words = least_strain(design, f, bottom=bottom)
+    found = required_reinforcement(
+        moment, b=bw, d=d, d2=bar_depth(f), fc=fc, fy=f["f_y"], phi=f["phi_t"], e_s=f["E_s"],
+        flange=flange, strain=strain,
     )  # fmt: skip
+    w.step("ε_t", "", strain, "", "9.3.3.1", note=words)
+    _flexure_steps(w, moment, found, flange, bw, d, fc, f)
     root, width = math.sqrt(fc / PSI), bw
     in_tension = shape.compressed_flange(top=not bottom)[0]
     if design.cantilever and in_tension > bw:  # statically determinate, flange in tension
@@ -156,13 +227,90 @@ def _bending(
         "A_s,min", "max(3 √f'c, 200) b_w d / f_y",
         max(3.0 * root, 200.0) * PSI * width * d / f["f_y"], "area", "9.6.1.2",
     )  # fmt: skip
-    largest = w.step(
-        "A_s,max", "", largest_area(b=bw, d=d, fc=fc, fy=f["f_y"], e_s=f["E_s"], flange=flange),
-        "area", "9.3.3.1", note="ε_t = ε_ty + 0.003",
+    needed = w.step("A_s", "", max(found.tension, least), "area", "",
+                    note="tension reinforcement to be put in: the larger")  # fmt: skip
+    largest = w.step("A_s,max", "{rho} {b_w} {d}", f["rho_max"] * bw * d, "area", "18.6.3.1",
+                     note="taken as practical", rho=(f["rho_max"], ""),
+                     b_w=(bw, "section length"), d=(d, "section length"))  # fmt: skip
+    return w.check(
+        name, "ACI 318-19, 9.3.3, 9.6.1, 22.2", demand=needed, resistance=largest,
+        quantity="area", x=extreme.x, source=extreme.source, not_covered=_NOT_COVERED,
+    )  # fmt: skip
+
+
+def least_strain(design: MemberDesign, f: Figures, *, bottom: bool) -> tuple[float, str]:
+    """Return the least ε_t at nominal strength: 9.3.3.1, and 6.6.5 where the moment was reduced."""
+    least = f["f_y"] / f["E_s"] + 0.003
+    shift = design.redistribution
+    part = 1.0 - shift.delta(bottom=bottom) if shift is not None else 0.0
+    if shift is None or part <= 0.0 or not shift.figure("per_strain"):
+        return least, "at least ε_ty + 0.003"
+    asked = max(shift.figure("least_strain"), part / shift.figure("per_strain"))
+    return max(least, asked), f"at least, where {100 * part:.1f} % were taken off: 6.6.5.2, 6.6.5.3"
+
+
+def _flexure_steps(
+    w: Working,
+    moment: float,
+    found: Flexure,
+    flange: tuple[float, float] | None,
+    bw: float,
+    d: float,
+    fc: float,
+    f: Figures,
+) -> None:
+    """Write down how the reinforcement follows from the moment."""
+    phi, fy, depth = f["phi_t"], f["f_y"], bar_depth(f)
+    if not math.isfinite(found.tension):
+        w.step("A_s,req", "", found.tension, "area", "22.2", note="the section is too small")
+        return
+    if not found.compression:
+        force = found.tension * fy
+        lever = moment / phi / force
+        wide = flange[0] if flange else bw
+        if flange and force > 0.85 * fc * wide * flange[1]:
+            w.step("h_f", "", flange[1], "section length", "22.2.2.4", note="the web is compressed "
+                   "as well: the sides of the flange take b_f - b_w over h_f")  # fmt: skip
+        else:
+            a = force / (0.85 * fc * wide)
+            w.step("a", "{d} - √({d}² - 2 {M_u} / ({phi} 0.85 {f'c} {b}))", a, "section length",
+                   "22.2.2.4", d=(d, "section length"), M_u=(moment, "moment"), phi=(phi, ""),
+                   b=(wide, "section length"), **{"f'c": (fc, "stress")})  # fmt: skip
+        w.step("z", "" if flange else "d - a/2", lever, "section length", "")
+        w.step("A_s,req", "{M_u} / ({phi} {f_y} {z})", found.tension, "area", "22.2, 22.3",
+               note="tension-controlled", M_u=(moment, "moment"), phi=(phi, ""),
+               f_y=(fy, "stress"), z=(lever, "section length"))  # fmt: skip
+        return
+    w.step("M_n1", "", found.within, "moment", "22.2", note="without bars in compression, ε_t as "
+           "above")  # fmt: skip
+    w.step("f'_s - 0.85 f'c", "", found.stress, "stress", "22.2.1", note="in the compressed bars, "
+           "less the concrete they displace")  # fmt: skip
+    w.step("A'_s", "({M_u}/{phi} - {M_n1}) / ({f'_s} ({d} - {d'}))", found.compression, "area",
+           "22.2", note="compression reinforcement required", M_u=(moment, "moment"),
+           phi=(phi, ""), M_n1=(found.within, "moment"), d=(d, "section length"),
+           **{"f'_s": (found.stress, "stress"), "d'": (depth, "section length")})  # fmt: skip
+    first = found.tension - found.compression * found.stress / fy
+    w.step("A_s,req", "{A_s1} + {A'_s} {f'_s} / {f_y}", found.tension, "area", "22.2",
+           A_s1=(first, "area"), f_y=(fy, "stress"), **{"A'_s": (found.compression, "area"),
+           "f'_s": (found.stress, "stress")})  # fmt: skip
+
+
+def _redistribution(design: MemberDesign, f: Figures, fc: float) -> Check | None:
+    """6.6.5: 1000 ε_t percent, at most 20 %; ε_t is kept by ``least_strain``."""
+    shift = design.redistribution
+    if shift is None or shift.fraction <= 0.0:
+        return None
+    w = Working()
+    strain, _ = least_strain(design, f, bottom=False)
+    w.step("ε_t", "", strain, "", "6.6.5.2", note="which the hogging reinforcement keeps")
+    most = w.step(
+        "limit", "1000 {ε_t} % ≤ {most}", min(shift.figure("per_strain") * strain,
+        shift.figure("most")), "", "6.6.5.3", ε_t=(strain, ""), most=(shift.figure("most"), ""),
     )  # fmt: skip
     return w.check(
-        name, "ACI 318-19, 9.3.3, 9.6.1, 22.2", demand=max(needed, least), resistance=largest,
-        quantity="area", x=extreme.x, source=extreme.source, not_covered=_NOT_COVERED,
+        "redistribution", "ACI 318-19, 6.6.5", demand=shift.fraction, resistance=most, quantity="",
+        not_covered="Flexure and shear are checked with the redistributed moments; they must not "
+        "come from approximate coefficients (6.6.5.1).",
     )  # fmt: skip
 
 
@@ -171,9 +319,12 @@ def _shear(design: MemberDesign, f: Figures, fc: float) -> Check:
     b, d = shape_of(design).web, design.section.depth - bar_depth(f)
     demand, root = abs(design.governing.shear.value), math.sqrt(fc / PSI)
     fyt = min(f["f_y"], _MOST_STIRRUP)
+    w.step("b_w", "", b, "section length", "")
+    w.step("d", "", d, "section length", "", note="to the centre of the bars")
     concrete = w.step(
         "V_c", "2 λ √f'c b_w d", concrete_shear(b=b, d=d, fc=fc, light=f["lambda"], rho=None),
-        "force", "Table 22.5.5.1(a)", note="with at least the least stirrups",
+        "force", "Table 22.5.5.1(a)",
+        note=f"with at least the least stirrups; f'c = {fc / PSI:.0f} psi",
     )  # fmt: skip
     rho = max(3.0 * root, 200.0) * PSI / f["f_y"]
     plain = w.step(
@@ -191,13 +342,26 @@ def _shear(design: MemberDesign, f: Figures, fc: float) -> Check:
     if demand <= threshold:
         w.step("A_v/s", "", 0.0, "reinforcement per length", "9.6.3.1", note="no stirrups required")
     else:
-        w.step("A_v/s", "V_s / (f_yt d) ≥ least", max(steel / (fyt * d), least),
-               "reinforcement per length", "22.5.8.5.3, 9.6.3.4",
-               note="stirrups per length")  # fmt: skip
+        w.step("V_s", "{V_u} / {phi_v} - {V_c} ≥ 0", steel, "force", "22.5.8.1",
+               V_u=(demand, "force"), phi_v=(f["phi_v"], ""), V_c=(concrete, "force"))  # fmt: skip
+        w.step("A_v/s,min", "max(0.75 √f'c, 50 psi) b_w / f_yt", least, "reinforcement per length",
+               "9.6.3.4")  # fmt: skip
+        w.step("A_v/s", "{V_s} / ({f_yt} {d}) ≥ A_v/s,min", max(steel / (fyt * d), least),
+               "reinforcement per length", "22.5.8.5.3, 9.6.3.4", note="stirrups per length",
+               V_s=(steel, "force"), f_yt=(fyt, "stress"), d=(d, "section length"))  # fmt: skip
+        w.step("s_max", *stirrup_spacing(steel, b=b, d=d, fc=fc), "section length",
+               "Table 9.7.6.2.2", note="largest spacing of stirrups")  # fmt: skip
     return w.check(
         "shear", "ACI 318-19, 22.5", demand=demand, resistance=most, quantity="force",
         x=design.governing.shear.x, source=design.governing.shear.source, not_covered=_NOT_COVERED,
     )  # fmt: skip
+
+
+def stirrup_spacing(steel: float, *, b: float, d: float, fc: float) -> tuple[str, float]:
+    """Return the rule and the largest spacing of stirrups along a beam (Table 9.7.6.2.2), m."""
+    if steel <= 4.0 * math.sqrt(fc / PSI) * PSI * b * d:
+        return "d/2 ≤ 24 in", min(d / 2.0, 24.0 * _INCH)
+    return "d/4 ≤ 12 in", min(d / 4.0, 12.0 * _INCH)
 
 
 def _least_depth(design: MemberDesign, f: Figures) -> Check:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 import re
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from itertools import pairwise
 
@@ -99,6 +99,29 @@ class Sag:
     x: float = 0.0
 
 
+@dataclass(frozen=True, slots=True)
+class Redistribution:
+    """How far the moments that a member is checked for were redistributed.
+
+    ``fraction``: the largest part taken off a support moment at its ends; ``sagging``: the
+    redistributed sagging moment over the elastic one, 1 where it is not reduced.  ``figures`` are
+    those of the rule set ("redistribution.k1"), ``ductility`` the class of the reinforcement.
+    """
+
+    fraction: float
+    figures: Mapping[str, float]
+    sagging: float = 1.0
+    ductility: str = ""
+
+    def delta(self, *, bottom: bool) -> float:
+        """Redistributed over elastic moment, where the bottom (or the top) is in tension."""
+        return min(1.0, self.sagging if bottom else 1.0 - self.fraction)
+
+    def figure(self, name: str) -> float:
+        """Return a figure of the rule set by its short name; 0 where it has none."""
+        return self.figures.get(f"redistribution.{name}", 0.0)
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class MemberDesign:
     """One member, ready to be checked.
@@ -120,6 +143,8 @@ class MemberDesign:
     bearings: tuple[Bearing, ...] = ()
     sags: tuple[Sag, ...] | None = ()
     """None where the combinations do not give them."""
+    redistribution: Redistribution | None = None
+    """None: the moments are elastic."""
 
     @property
     def axial(self) -> tuple[float, float]:

@@ -10,7 +10,9 @@ from scipy.optimize import brentq
 
 from analysis_core.checks import concrete_aci, concrete_en
 from analysis_core.checks.concrete_parts import shape_of
+from analysis_core.checks.design import Redistribution
 from analysis_core.checks.working import Figures
+from analysis_core.results import Extreme
 
 EN = Figures(concrete_en.FIGURES, {})
 ACI = Figures(concrete_aci.FIGURES, {})
@@ -191,3 +193,119 @@ def test_long_spans_and_wide_flanges_lower_the_span_over_depth(span, part):
     assert found == pytest.approx(0.8 * part * plain)
     found, plain = limit(tee(0.85, 0.12, 0.3, 0.5))  # 2.8
     assert found == pytest.approx(part * plain)
+
+
+@pytest.mark.parametrize(("strain", "flange"), [
+    (0.0, None), (0.0075, None), (0.0, (0.8, 0.10)), (0.015, (0.8, 0.10)),
+])  # fmt: skip
+def test_bars_in_compression_by_compatibility_of_strains(strain, flange):
+    """The reinforcement found, put into a section whose neutral axis is solved for anew."""
+    b, d, d2, fc, fy, e_s = 0.3, 0.44, 0.06, 4000 * PSI, 60e3 * PSI, 29e6 * PSI
+    most = concrete_aci.largest_area(b=b, d=d, fc=fc, fy=fy, e_s=e_s, flange=flange, strain=strain)
+    moment = 1.4 * 0.9 * most * fy * 0.8 * d  # beyond what tension reinforcement alone carries
+    found = concrete_aci.required_reinforcement(
+        moment, b=b, d=d, d2=d2, fc=fc, fy=fy, phi=0.9, e_s=e_s, flange=flange, strain=strain
+    )
+    wide, deep = flange or (b, d)
+
+    def forces(c):
+        a = 0.85 * c
+        concrete = 0.85 * fc * (wide * min(a, deep) + b * max(a - deep, 0.0))
+        arm = (wide * min(a, deep) ** 2 + b * max(a * a - deep * deep, 0.0)) / 2 * 0.85 * fc
+        upper = min(fy, max(-fy, e_s * 0.003 * (c - d2) / c)) - 0.85 * fc
+        lower = min(fy, e_s * 0.003 * (d - c) / c)
+        axial = concrete + found.compression * upper - found.tension * lower
+        return axial, found.tension * lower * d - arm - found.compression * upper * d2
+
+    c = brentq(lambda c: forces(c)[0], d2, d)
+
+    assert found.compression > 0.0
+    assert 0.9 * forces(c)[1] == pytest.approx(moment, rel=1e-6)
+    assert 0.003 * (d - c) / c == pytest.approx(max(60 / 29000 + 0.003, strain), rel=1e-6)
+
+
+@pytest.mark.parametrize(("moment", "compressed"), [(0.999, False), (1.001, True)])
+def test_bars_in_compression_begin_where_the_strain_of_the_tension_bars_ends(moment, compressed):
+    values = {"b": 0.3, "d": 0.44, "fc": 4000 * PSI, "fy": 60e3 * PSI}
+    most = concrete_aci.largest_area(**values, e_s=29e6 * PSI)
+    limit = 0.9 * concrete_aci.nominal_moment(most, **values)
+    found = concrete_aci.required_reinforcement(
+        moment * limit, **values, d2=0.06, phi=0.9, e_s=29e6 * PSI
+    )
+    assert (found.compression > 0.0) is compressed
+
+
+@pytest.mark.parametrize(("steel", "rule", "spacing"), [
+    (0.99, "d/2", 0.22), (1.01, "d/4", 0.11),
+])  # fmt: skip
+def test_stirrups_stand_closer_where_they_carry_much(steel, rule, spacing):
+    limit = 4 * math.sqrt(4000) * PSI * 0.3 * 0.44
+    found = concrete_aci.stirrup_spacing(steel * limit, b=0.3, d=0.44, fc=4000 * PSI)
+    assert found[0].startswith(rule)
+    assert found[1] == pytest.approx(spacing)
+
+
+def shifted(design, fraction, **more):
+    figures = {
+        "redistribution.k1": 0.44, "redistribution.k2": 1.25, "redistribution.k5": 0.7,
+        "redistribution.k6": 0.8, "redistribution.per_strain": 10.0, "redistribution.most": 0.2,
+        "redistribution.least_strain": 0.0075,
+    }  # fmt: skip
+    return replace(design, redistribution=Redistribution(fraction, figures, **more))
+
+
+def hogging(section, moment):
+    """A member whose top is in tension at one end."""
+    base = simple_span(section, C30, 6.0, 1.0)
+    extreme = Extreme(-moment, 0.0, "U1")
+    return replace(base, governing=replace(base.governing, hogging=extreme))
+
+
+@pytest.mark.parametrize("fraction", [0.1, 0.2, 0.3])
+def test_redistribution_by_en_1992_keeps_the_neutral_axis_high(fraction):
+    """5.5(4): δ ≥ 0.44 + 1.25 x_u/d; beyond that bars in compression take the rest."""
+    design = shifted(hogging(rectangle(0.3, 0.5), 260e3), fraction, ductility="B")
+    found = {c.name: c for c in concrete_en.check_concrete(design, EN)}
+    steps = {s.symbol: s.value for s in found["hogging reinforcement"].steps}
+    d, fcd, fyd = 0.452, 20e6, 500e6 / 1.15
+
+    assert steps["x/d"] <= (1 - fraction - 0.44) / 1.25 + 1e-12
+    assert found["redistribution"].status == "satisfied"
+
+    # Equilibrium of the section as reinforced, solved anew.
+    def unbalanced(x):
+        strain = 0.0035 * (x - 0.048) / x
+        upper = steps.get("A_s2", 0.0) * min(fyd, max(-fyd, 200e9 * strain))
+        return 0.8 * x * 0.3 * fcd + upper - steps["A_s"] * fyd
+
+    x = brentq(unbalanced, 1e-3, d)
+    strain = 0.0035 * (x - 0.048) / x
+    upper = steps.get("A_s2", 0.0) * min(fyd, max(-fyd, 200e9 * strain))
+    moment = 0.8 * x * 0.3 * fcd * (d - 0.4 * x) + upper * (d - 0.048)
+    assert x / d == pytest.approx(steps["x/d"], rel=1e-6)
+    assert moment == pytest.approx(260e3, rel=1e-6)
+
+
+@pytest.mark.parametrize(("fraction", "class_", "status"), [
+    (0.19, "", "satisfied"), (0.21, "", "not satisfied"), (0.21, "B", "satisfied"),
+    (0.31, "C", "not satisfied"),
+])  # fmt: skip
+def test_redistribution_ends_with_the_ductility_of_the_bars(fraction, class_, status):
+    design = shifted(hogging(rectangle(0.3, 0.5), 60e3), fraction, ductility=class_)
+    found = {c.name: c for c in concrete_en.check_concrete(design, EN)}
+    assert found["redistribution"].status == status
+
+
+@pytest.mark.parametrize(("fraction", "strain", "status"), [
+    (0.05, 0.0075, "satisfied"), (0.15, 0.015, "satisfied"), (0.21, 0.021, "not satisfied"),
+])  # fmt: skip
+def test_redistribution_by_aci_keeps_the_strain_it_needs(fraction, strain, status):
+    """6.6.5: ε_t of at least 0.0075, and 1000 ε_t percent, at most 20 %."""
+    design = shifted(hogging(rectangle(0.3, 0.5), 200e3), fraction)
+    found = {c.name: c for c in concrete_aci.check_concrete(design, ACI)}
+    steps = {s.symbol: s.value for s in found["hogging reinforcement"].steps}
+    assert steps["ε_t"] == pytest.approx(strain)
+    assert found["redistribution"].status == status
+    assert "redistribution" not in {
+        c.name for c in concrete_aci.check_concrete(hogging(rectangle(0.3, 0.5), 200e3), ACI)
+    }
