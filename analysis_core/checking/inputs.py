@@ -14,7 +14,14 @@ from analysis_core.checking.restraints import (
     restraints,
     stretch_of,
 )
-from analysis_core.checks.design import Bearing, EffectField, Governing, MemberDesign, Sag
+from analysis_core.checks.design import (
+    Bearing,
+    EffectField,
+    Governing,
+    MemberDesign,
+    Redistribution,
+    Sag,
+)
 from analysis_core.checks.timber_en import DURATIONS
 from analysis_core.effects.deflection_limits import (
     DeflectionLimit,
@@ -25,7 +32,7 @@ from analysis_core.effects.deflection_limits import (
 from analysis_core.effects.envelopes import envelope
 from analysis_core.effects.states import State, governing_states, state_stations
 from analysis_core.model import Combination, Line, LineModel, Member, Transfer
-from analysis_core.results import LineEnvelope, LineResult, Stations
+from analysis_core.results import LineEnvelope, LineResult, LineSolution, Stations
 from analysis_core.settings import Settings
 from analysis_core.solving.line_details import DetailInput, detail_of
 
@@ -40,12 +47,26 @@ _DURATION = {
 
 
 @dataclass(frozen=True, slots=True, eq=False)
+class LineEffects:
+    """What fields of effects are made of: the parts of the cases, extremes, and their states.
+
+    ``shifts``: how far moments were redistributed, by member; empty where they are elastic.
+    """
+
+    parts: LineSolution
+    strength: LineEnvelope
+    states: tuple[State, ...]
+    shifts: Mapping[int, Redistribution]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
 class LineFields:
     """Effects that occur together, of all members of a line.
 
     ``axial`` (R, M, 2) N at the ends of members.  ``durations`` by the source of a field.
     """
 
+    effects: LineEffects
     at: Stations
     axial: Floats
     durations: Mapping[str, str]
@@ -55,18 +76,46 @@ class LineFields:
     """Whether the forces on bearings are wanted."""
 
 
-def line_fields(result: LineResult) -> LineFields:
+def elastic_effects(result: LineResult) -> LineEffects:
+    """Return the elastic effects of a line."""
+    assert result.parts is not None
+    strength = result.envelopes["strength"]
+    return LineEffects(result.parts, strength, detail_of(result).states, {})
+
+
+def redistributed_effects(result: LineResult) -> LineEffects | None:
+    """Return the effects after redistribution; None where nothing was redistributed."""
+    found, given = detail_of(result).redistributed, _given(result)
+    if found is None or found.envelope is None or found.solution is None:
+        return None
+    strength = [c for c in given.combinations if c.limit_state == "strength"]
+    states = governing_states(
+        given.spans, found.solution, strength, given.arrangements, found.envelope
+    )
+    figures = given.rule_set.values()
+    elastic = result.envelopes["strength"].members
+    shifts = {}
+    for member, before, after in zip(
+        result.line.members, elastic, found.envelope.members, strict=True
+    ):
+        part = max(found.fractions.get(joint, 0.0) for joint in (member.start, member.end))
+        sagging = 1.0
+        if before.sagging.value > 0.0:
+            sagging = max(after.sagging.value, 0.0) / before.sagging.value
+        shifts[member.id] = Redistribution(part, figures, sagging, found.plan.ductility)
+    return LineEffects(found.solution, found.envelope, states, shifts)
+
+
+def line_fields(result: LineResult, effects: LineEffects) -> LineFields:
     """Return the states that govern moments and shears, and where axial forces act, more.
 
     Then the combinations with everything loaded come beside them.
     """
-    assert result.parts is not None
-    parts = result.parts
-    states = list(detail_of(result).states)
-    if result.combined is not None and np.abs(parts.axial).max(initial=0.0) > 0.0:
+    states = list(effects.states)
+    if result.combined is not None and np.abs(effects.parts.axial).max(initial=0.0) > 0.0:
         strength = [c for c in _given(result).combinations if c.limit_state == "strength"]
         states += [_everything(c, result) for c in strength]
-    return _of_states(result, states, {}, (result.envelopes["strength"],))
+    return _of_states(effects, states, {}, (effects.strength,))
 
 
 def timber_fields(result: LineResult, model: LineModel, settings: Settings) -> LineFields:
@@ -92,7 +141,7 @@ def timber_fields(result: LineResult, model: LineModel, settings: Settings) -> L
             durations[state.source] = duration
         for reaction in of_class.reactions:
             durations[reaction.vertical_max.source] = duration
-    return _of_states(result, states, durations, tuple(found), bearings=True)
+    return _of_states(elastic_effects(result), states, durations, tuple(found), bearings=True)
 
 
 def by_duration(
@@ -127,7 +176,7 @@ def designs(
     result: LineResult, fields: LineFields, model: LineModel, settings: Settings
 ) -> list[MemberDesign | None]:
     """Return each member ready to be checked; None where section or material are missing."""
-    line, strength = result.line, result.envelopes["strength"]
+    line, strength = result.line, fields.effects.strength
     transfers = [t for t in model.transfers if t.to_line == line.mark]
     spans = {span.number: span for span in spans_of(line)}
     out: list[MemberDesign | None] = []
@@ -148,6 +197,7 @@ def designs(
                 continuous_ends=continuous_ends(line, span) if span else 0,
                 span=span.length if span else stretch.length,
                 bearings=_bearings(line, member, fields, transfers),
+                redistribution=fields.effects.shifts.get(member.id),
             )
         )  # fmt: skip
     return out
@@ -211,19 +261,19 @@ def _everything(combination: Combination, result: LineResult) -> State:
 
 
 def _of_states(
-    result: LineResult,
+    effects: LineEffects,
     states: Sequence[State],
     durations: Mapping[str, str],
     found: tuple[LineEnvelope, ...],
     *,
     bearings: bool = False,
 ) -> LineFields:
-    parts = result.parts
-    assert parts is not None
+    parts = effects.parts
     factors = np.array([[dict(s.factors).get(c, 0.0) for c in parts.cases] for s in states])
     factors = factors.reshape(len(states), len(parts.cases))
     axial = np.tensordot(factors, parts.axial, axes=1)
-    return LineFields(state_stations(parts, states, _COUNT), axial, durations, found, bearings)
+    at = state_stations(parts, states, _COUNT)
+    return LineFields(effects, at, axial, durations, found, bearings)
 
 
 def _field(fields: LineFields, row: int, stretch: Stretch, member: Member) -> EffectField:

@@ -5,8 +5,22 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
-from analysis_core.checking.inputs import designs, line_fields, timber_fields, timber_sags
-from analysis_core.checks import concrete_aci, concrete_en, steel_aisc, steel_en, timber_en
+from analysis_core.checking.inputs import (
+    designs,
+    elastic_effects,
+    line_fields,
+    redistributed_effects,
+    timber_fields,
+    timber_sags,
+)
+from analysis_core.checks import (
+    concrete_aci,
+    concrete_en,
+    steel_aisc,
+    steel_en,
+    steel_redistribution,
+    timber_en,
+)
 from analysis_core.checks.design import MemberDesign
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 from analysis_core.errors import JobError
@@ -31,6 +45,8 @@ TITLES: Mapping[str, str] = {
 }
 DEFLECTION_LIMIT = "deflection limit"
 _TIMBER = "en-1995-1-1"
+_STEEL = ("en-1993-1-1", "aisc-360")
+_TIMBER_ELASTIC = "Timber does not redistribute moments. All checks use the elastic moments."
 _DEFLECTION_NOT_COVERED = (
     "Elastic, from the rigidities as modelled; cracking and creep are not covered here."
 )
@@ -71,7 +87,9 @@ def check_line(result: LineResult, model: LineModel, settings: Settings) -> list
     if "strength" not in result.envelopes or result.parts is None or result.detail is None:
         return []
     codes = [_code(member, result, settings) for member in result.line.members]
-    plain = line_fields(result)
+    plain = line_fields(result, elastic_effects(result))
+    shifted = redistributed_effects(result)
+    moved = designs(result, line_fields(result, shifted), model, settings) if shifted else None
     timber = timber_fields(result, model, settings) if _TIMBER in codes else plain
     sags = timber_sags(result, _creep(settings)) if _TIMBER in codes else None
     factored = _factored(result)
@@ -83,7 +101,8 @@ def check_line(result: LineResult, model: LineModel, settings: Settings) -> list
         design = prepared[code == _TIMBER or timber is plain][member.id]
         if design is not None and code == _TIMBER:
             design = replace(design, sags=None if sags is None else sags.get(member.id, ()))
-        checks = _checks(member, design, code, settings, timber.durations, factored)
+        after = moved[member.id] if moved is not None else None
+        checks = _checks(member, design, after, code, settings, timber.durations, factored)
         held = design.restraints.reason if design is not None else ""
         checks = (*checks, *_deflections(result, member))
         out.append(MemberChecks(member.id, code if code in FIGURES else "", held, checks))
@@ -91,14 +110,24 @@ def check_line(result: LineResult, model: LineModel, settings: Settings) -> list
 
 
 def _checks(
-    member: Member, design: MemberDesign | None, code: str, settings: Settings,
-    durations: Mapping[str, str], factored: bool,
+    member: Member, design: MemberDesign | None, moved: MemberDesign | None, code: str,
+    settings: Settings, durations: Mapping[str, str], factored: bool,
 ) -> tuple[Check, ...]:  # fmt: skip
+    """``moved``: the same with redistributed moments, where they were; timber stays elastic."""
     reason = _outside(member, code, factored)
     if reason or design is None:
         return (not_checked("resistance", reason),)
     known = FIGURES[code]
     figures = Figures(known, {k: v for k, v in settings.checks.replace.items() if k in known})
+    shifts: list[Check | None] = []
+    if moved is not None and code in _STEEL:
+        if reason := steel_redistribution.why_elastic(moved, figures, code):
+            shifts, moved = [steel_redistribution.elastic_instead(reason, code)], None
+        else:
+            shifts = [steel_redistribution.check_redistribution(moved, code)]
+    if moved is not None and code == _TIMBER:
+        shifts, moved = [not_checked("redistribution", _TIMBER_ELASTIC, "EN 1995-1-1")], None
+    design = moved or design
     kind = design.material.category
     run: dict[str, Callable[[], Sequence[Check]]] = {
         "en-1993-1-1": lambda: steel_en.check_steel(design, figures),
@@ -107,7 +136,7 @@ def _checks(
         "aci-318-19": lambda: concrete_aci.check_concrete(design, figures),
         "en-1995-1-1": lambda: timber_en.check_timber(design, figures, durations, kind),
     }
-    return tuple(run[code]())
+    return (*run[code](), *(check for check in shifts if check is not None))
 
 
 def _outside(member: Member, code: str, factored: bool) -> str:

@@ -76,7 +76,7 @@ def check_concrete(design: MemberDesign, figures: Figures) -> list[Check]:
         _bending("sagging reinforcement", design, figures, fc, governing.sagging, bottom=True),
         _bending("hogging reinforcement", design, figures, fc, governing.hogging, bottom=False),
         _shear(design, figures, fc),
-        _redistribution(design, figures, fc),
+        _redistribution(design, figures),
         _least_depth(design, figures),
     ]
     return [check for check in checks if check is not None]
@@ -274,7 +274,7 @@ def _flexure_steps(
         else:
             a = force / (0.85 * fc * wide)
             w.step("a", "{d} - √({d}² - 2 {M_u} / ({phi} 0.85 {f'c} {b}))", a, "section length",
-                   "22.2.2.4", d=(d, "section length"), M_u=(moment, "moment"), phi=(phi, ""),
+                   "22.2.2.4", note="", d=(d, "section length"), M_u=(moment, "moment"), phi=(phi, ""),
                    b=(wide, "section length"), **{"f'c": (fc, "stress")})  # fmt: skip
         w.step("z", "" if flange else "d - a/2", lever, "section length", "")
         w.step("A_s,req", "{M_u} / ({phi} {f_y} {z})", found.tension, "area", "22.2, 22.3",
@@ -290,16 +290,19 @@ def _flexure_steps(
            phi=(phi, ""), M_n1=(found.within, "moment"), d=(d, "section length"),
            **{"f'_s": (found.stress, "stress"), "d'": (depth, "section length")})  # fmt: skip
     first = found.tension - found.compression * found.stress / fy
-    w.step("A_s,req", "{A_s1} + {A'_s} {f'_s} / {f_y}", found.tension, "area", "22.2",
+    w.step("A_s,req", "{A_s1} + {A'_s} {f'_s} / {f_y}", found.tension, "area", "22.2", note="",
            A_s1=(first, "area"), f_y=(fy, "stress"), **{"A'_s": (found.compression, "area"),
            "f'_s": (found.stress, "stress")})  # fmt: skip
 
 
-def _redistribution(design: MemberDesign, f: Figures, fc: float) -> Check | None:
+def _redistribution(design: MemberDesign, f: Figures) -> Check | None:
     """6.6.5: 1000 ε_t percent, at most 20 %; ε_t is kept by ``least_strain``."""
     shift = design.redistribution
     if shift is None or shift.fraction <= 0.0:
         return None
+    if not shift.figure("per_strain"):
+        reason = "The rule set has no limits of 6.6.5 for redistribution."
+        return not_checked("redistribution", reason, "ACI 318-19, 6.6.5")
     w = Working()
     strain, _ = least_strain(design, f, bottom=False)
     w.step("ε_t", "", strain, "", "6.6.5.2", note="which the hogging reinforcement keeps")

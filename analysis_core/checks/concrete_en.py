@@ -232,7 +232,7 @@ def _flexure_steps(
                note=words + ("; reached" if found.compression else ""))  # fmt: skip
     if not found.compression:
         w.step("z", "" if in_web else "{d} (1 - 0.4 {x/d})", found.lever, "section length", "",
-               d=(d, "section length"), **{"x/d": (found.x_over_d, "")})  # fmt: skip
+               note="", d=(d, "section length"), **{"x/d": (found.x_over_d, "")})  # fmt: skip
         w.step("A_s,req", "{M_Ed} / ({z} {f_yd})", found.tension, "area", "6.1",
                M_Ed=(moment, "moment"), z=(found.lever, "section length"),
                f_yd=(fyd, "stress"))  # fmt: skip
@@ -260,6 +260,9 @@ def _redistribution(
     shift = design.redistribution
     if shift is None or shift.fraction <= 0.0:
         return None
+    if not shift.figure("k2"):
+        reason = "The rule set has no limits of 5.5(4) for redistribution."
+        return not_checked("redistribution", reason, "EN 1992-1-1, 5.5(4)")
     delta = shift.delta(bottom=False)
     hogging = next((c for c in made if c.name.startswith("hogging")), None)
     ratio = next((s.value for s in hogging.steps if s.symbol == "x/d"), 0.0) if hogging else 0.0
@@ -267,7 +270,7 @@ def _redistribution(
     w.step("δ", "", delta, "", "5.5(4)", note="redistributed over elastic support moment")
     axis = w.step(
         "δ_x", "{k_1} + {k_2} {x/d}", shift.figure("k1") + shift.figure("k2") * ratio, "",
-        "5.5(4), (5.10a)", k_1=(shift.figure("k1"), ""), k_2=(shift.figure("k2"), ""),
+        "5.5(4), (5.10a)", note="", k_1=(shift.figure("k1"), ""), k_2=(shift.figure("k2"), ""),
         **{"x/d": (ratio, "")},
     )  # fmt: skip
     name = "k5" if shift.ductility in ("B", "C") else "k6"
@@ -333,7 +336,7 @@ def _shear(design: MemberDesign, f: Figures, fck: float) -> Check:
              "f_cd": (fcd, "stress")}  # fmt: skip
     w.step("V_Rd,max(θ)", "{b_w} {z} {ν_1} {f_cd} / ({cot} + 1/{cot})",
            b * lever * nu * fcd / (cot + 1.0 / cot), "force", "6.2.3(3), (6.9)",
-           cot=(cot, ""), **strut)  # fmt: skip
+           note="", cot=(cot, ""), **strut)  # fmt: skip
     steepest = w.step("V_Rd,max", "{b_w} {z} {ν_1} {f_cd} / 2", b * lever * nu * fcd / 2.0, "force",
                       "6.2.3(3), (6.9)", note="θ = 45°, the most that struts carry",
                       **strut)  # fmt: skip

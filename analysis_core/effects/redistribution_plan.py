@@ -24,6 +24,8 @@ class Plan:
     fractions: Mapping[int, float]
     limit: Limit | None
     findings: tuple[Finding, ...] = ()
+    ductility: str = ""
+    """Class of reinforcement as stated: A, B, C or ""."""
 
 
 def plan_redistribution(
@@ -68,7 +70,7 @@ def plan_redistribution(
             )
             for broken in unmet_conditions(rule, line)
         ]
-    return Plan(fractions, limit, tuple(findings))
+    return Plan(fractions, limit, tuple(findings), wish.ductility)
 
 
 def limit_clause(limit: Limit | None) -> str:

@@ -37,6 +37,8 @@ class Redistributed:
     plan: Plan
     envelope: LineEnvelope | None
     problem: str = ""
+    solution: LineSolution | None = None
+    """The parts of the cases with their support moments reduced."""
 
     @property
     def fractions(self) -> Mapping[int, float]:
@@ -169,4 +171,4 @@ def _redistributed(given: DetailInput) -> Redistributed | None:
         limit_state="strength",
         arrangements=given.arrangements,
     )
-    return Redistributed(plan, found)
+    return Redistributed(plan, found, solution=reduced)

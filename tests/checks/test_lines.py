@@ -3,7 +3,7 @@
 from dataclasses import replace
 
 import pytest
-from designs import C24, C30, IPE300, S355, rectangle
+from designs import C24, C30, IPE300, S355, box, rectangle
 
 from analysis_core import pipeline
 from analysis_core.checking.inputs import by_duration
@@ -24,7 +24,7 @@ from analysis_core.model import (
     Support,
     Transfer,
 )
-from analysis_core.settings import CheckSettings, RuleSettings, Settings
+from analysis_core.settings import CheckSettings, Redistribution, RuleSettings, Settings
 
 BEARING = Support(vertical=float("inf"))
 CASES = (Case("G", "permanent"), Case("Q", "imposed", "B"), Case("S", "snow"))
@@ -256,3 +256,75 @@ def test_an_unknown_material_or_one_without_a_check_is_said_so():
     assert checked(timber, us)[1][0]["resistance"].status == "not checked"
     stated = replace(us, checks=CheckSettings(codes={"timber": "en-1995-1-1"}))
     assert checked(timber, stated)[1][0]["bending"].status == "satisfied"
+
+
+def two_spans_redistributed(section, material, part, *, set_="en-1990", load=8e3, **wish):
+    """Two spans of 6 m under G and half of Q on each; ``part`` off the middle moment."""
+    lengths = (6.0, 6.0)
+    actions = uniform("G", load, lengths) + uniform("Q", load / 2, lengths)
+    rules = RuleSettings(name=set_, redistribution=(Redistribution(part, **wish),))
+    if part is None:
+        rules = RuleSettings(name=set_)
+    held = CheckSettings(restraints=())
+    beam = line(section, material, lengths, actions=actions)
+    return checked(beam, Settings(rules=rules, checks=held), cases=CASES[:2])
+
+
+def moments_by_hand(g, q, part):
+    """Largest hogging and sagging moment of two spans of 6 m, q on one or both, by statics."""
+    hog = (1 - part) * (1.35 * g + 1.5 * q) * 36 / 8
+    total, at_support = 1.35 * g + 1.5 * q, (1 - part) * (1.35 * g * 36 / 8 + 1.5 * q * 36 / 16)
+    reaction = total * 3 - at_support / 6
+    return hog, reaction**2 / (2 * total)
+
+
+def test_concrete_is_reinforced_for_the_redistributed_moments():
+    _, (first, second), _ = two_spans_redistributed(
+        rectangle(0.3, 0.5), C30, 0.2, load=30e3, ductility="B"
+    )
+    hog, sag = moments_by_hand(30e3, 15e3, 0.2)
+    for member in (first, second):
+        for name, moment in (("hogging", hog), ("sagging", sag)):
+            check = member[f"{name} reinforcement"]
+            steps = {s.symbol: s.value for s in check.steps}
+            mu = moment / (0.3 * 0.452**2 * 20e6)
+            assert steps["μ"] == pytest.approx(mu, rel=1e-6)
+        # 5.5(4): delta = 0.8 >= 0.44 + 1.25 x/d, and >= 0.7 for class B.
+        ratio = next(s.value for s in member["hogging reinforcement"].steps if s.symbol == "x/d")
+        assert member["redistribution"].demand == pytest.approx(max(0.44 + 1.25 * ratio, 0.7))
+        assert member["redistribution"].resistance == pytest.approx(0.8)
+        assert ratio <= (0.8 - 0.44) / 1.25 + 1e-9
+
+
+def test_steel_takes_redistributed_moments_where_its_class_and_its_restraint_allow_it():
+    stout = two_spans_redistributed(IPE300, S355, 0.1)[1][0]
+    assert stout["redistribution"].status == "not checked"  # 6 m of IPE 300 buckle sideways
+    assert "elastic moments" in stout["redistribution"].reason
+    elastic = two_spans_redistributed(IPE300, S355, None)[1][0]
+    assert "redistribution" not in elastic
+    assert stout["bending"] == elastic["bending"]
+
+    tube_like = box("RHS", 0.30, 0.20, 0.010)
+    moved = two_spans_redistributed(tube_like, S355, 0.1, load=20e3)[1][0]
+    hog, sag = moments_by_hand(20e3, 10e3, 0.1)
+    assert abs(moved["bending"].demand) == pytest.approx(max(hog, sag), rel=1e-6)
+    assert moved["redistribution"].demand == 0.1
+    assert moved["redistribution"].resistance == 0.15
+
+    thin = box("RHS", 0.30, 0.20, 0.0058)  # c/t = 31.5: class 3 in S355, 38 ε = 30.9
+    kept = two_spans_redistributed(thin, S355, 0.1, load=20e3)[1][0]
+    assert "class" in kept["redistribution"].reason
+    plain, _ = moments_by_hand(20e3, 10e3, 0.0)
+    assert abs(kept["bending"].demand) == pytest.approx(plain, rel=1e-6)
+
+
+def test_timber_keeps_its_elastic_moments():
+    moved = two_spans_redistributed(rectangle(0.1, 0.3), C24, 0.1, load=1e3)[1][0]
+    elastic = two_spans_redistributed(rectangle(0.1, 0.3), C24, None, load=1e3)[1][0]
+    assert moved["redistribution"].status == "not checked"
+    assert moved["bending"] == elastic["bending"]
+
+
+def test_more_than_the_code_allows_is_not_satisfied():
+    moved = two_spans_redistributed(box("RHS", 0.30, 0.20, 0.010), S355, 0.2)[1][0]
+    assert moved["redistribution"].status == "not satisfied"
