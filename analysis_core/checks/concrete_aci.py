@@ -273,8 +273,9 @@ def _flexure_steps(
                    "as well: the sides of the flange take b_f - b_w over h_f")  # fmt: skip
         else:
             a = force / (0.85 * fc * wide)
-            w.step("a", "{d} - √({d}² - 2 {M_u} / ({phi} 0.85 {f'c} {b}))", a, "section length",
-                   "22.2.2.4", note="", d=(d, "section length"), M_u=(moment, "moment"), phi=(phi, ""),
+            w.step("a", "{d} - √({d}² - 2 {M_u} / ({phi} 0.85 {f'c} {b}))", a,
+                   "section length", "22.2.2.4", note="", d=(d, "section length"),
+                   M_u=(moment, "moment"), phi=(phi, ""),
                    b=(wide, "section length"), **{"f'c": (fc, "stress")})  # fmt: skip
         w.step("z", "" if flange else "d - a/2", lever, "section length", "")
         w.step("A_s,req", "{M_u} / ({phi} {f_y} {z})", found.tension, "area", "22.2, 22.3",
