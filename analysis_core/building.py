@@ -13,7 +13,7 @@ from dataclasses import dataclass, field
 from typing import Literal
 
 from analysis_core.findings import Finding
-from analysis_core.model import LimitState, Material, Nature, Point, Section
+from analysis_core.model import LimitState, Material, Nature, Point, Section, Tie
 
 Vector = tuple[float, float, float]
 Axes = tuple[Vector, Vector, Vector]
@@ -250,5 +250,7 @@ class Building:
     """Name and elevation (m, world) of each storey, lowest first."""
     counts: Mapping[str, int] = field(default_factory=dict)
     """What the file holds by class, for the survey."""
+    ties: tuple[Tie, ...] = ()
+    """Which building elements the items of an analysis model stand for."""
     known_marks: Mapping[str, str] = field(default_factory=dict)
     """Marks that lines had in an earlier run, by the GlobalIds of their elements."""

@@ -388,6 +388,20 @@ class Transfer:
 
 
 @dataclass(frozen=True, slots=True)
+class Tie:
+    """An item of an analysis model stands for a building element; both by GlobalId.
+
+    Position ``p`` on a member lies at ``offset + p`` m from the start of the element, or at
+    ``offset - p`` where ``reversed_``.
+    """
+
+    item: str
+    element: str
+    offset: float = 0.0
+    reversed_: bool = False
+
+
+@dataclass(frozen=True, slots=True)
 class LineModel:
     """All lines of a building with the cases and combinations they are solved for."""
 
@@ -403,6 +417,8 @@ class LineModel:
     """What goes straight to an element that is no line: its GlobalId, the case, N downward."""
     held_by: Mapping[str, str] = field(default_factory=dict)
     """Name of the slab that holds a member's top sideways all along, by the member's GlobalId."""
+    ties: tuple[Tie, ...] = ()
+    """Which building elements get the results of the items of an analysis model too."""
 
 
 def _check_numbering(line: Line) -> None:

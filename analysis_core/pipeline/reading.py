@@ -135,6 +135,7 @@ def idealised(reading: Reading, settings: Settings, *, only: Sequence[str] = ())
         findings=findings,
         names=_names(building),
         held_by=held_by_slabs(building),
+        ties=building.ties,
     )
     check_marks(model, only)
     return Survey(

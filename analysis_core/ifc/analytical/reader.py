@@ -19,6 +19,7 @@ from analysis_core.ifc.analytical.notes import MALFORMED, Notes, global_id, is_k
 from analysis_core.ifc.analytical.properties import MemberProperties
 from analysis_core.ifc.analytical.surfaces import SurfaceReader
 from analysis_core.ifc.analytical.targets import Target, chained
+from analysis_core.ifc.analytical.ties import ties_of
 from analysis_core.ifc.analytical.topology import Topology
 from analysis_core.ifc.analytical.unassigned import report_unassigned
 from analysis_core.ifc.collector import collector_paused
@@ -62,9 +63,11 @@ class _Reader:
         models = self.file.by_type("IfcStructuralAnalysisModel")
         self.models = [model for model in models if model[4] != RESULT_TYPE]
         self.shared = self._shared_placements()
+        self.varying = self._varying()
 
     def building(self) -> Building:
-        elements = self._elements()
+        entities = self._elements()
+        elements = {key: entity[0] for key, entity in entities.items()}
         locals_ = self._members(elements)
         conditions = ConditionReader(
             self.topology, self.source.units, self.shared, elements, self.notes
@@ -98,13 +101,17 @@ class _Reader:
         self._report_loose(actions, cases_of)
         self._report_models()
         report_unassigned(self.file, self.models, self.notes)
+        members = tuple(local.member for local in locals_.values())
+        joined = tuple(node.connection for node in nodes.values())
+        tied = {entity[0]: entity for entity in entities.values()}
+        ties = ties_of(self.source, self.settings, members, joined, tied, self.notes)
         self.notes.extend(self.source.units.findings())
         return Building(
             route="analytical",
             schema=self.source.schema,
             name=self._name(),
-            members=tuple(local.member for local in locals_.values()),
-            connections=tuple(node.connection for node in nodes.values()),
+            members=members,
+            connections=joined,
             attachments=tuple(attachments),
             actions=tuple(placed),
             areas=tuple(surfaces.areas.values()),
@@ -114,6 +121,7 @@ class _Reader:
             findings=self.notes.findings,
             storeys=self._storeys(),
             counts=self._counts(),
+            ties=ties,
         )
 
     def _counts(self) -> dict[str, int]:
@@ -140,7 +148,6 @@ class _Reader:
     def _members(self, elements: Mapping[int, str]) -> dict[int, Local]:
         properties = MemberProperties(self.source, self.settings, self.notes)
         reader = MemberReader(self.topology, properties, self.shared, elements, self.notes)
-        self.varying = self._varying()
         return reader.read(self.file.by_type("IfcStructuralCurveMember"), self.varying)
 
     def _varying(self) -> dict[int, list[Any]]:
@@ -202,13 +209,13 @@ class _Reader:
                 continue
         return below
 
-    def _elements(self) -> dict[int, str]:
-        """Return the GlobalId of the physical element that each item stands for.
+    def _elements(self) -> dict[int, Any]:
+        """Return the physical element that each item stands for, by the item's entity number.
 
         The standard ties them by IfcRelAssignsToProduct, IFC2X3 also by
         IfcRelConnectsStructuralElement; files write the former both ways round.
         """
-        ties: dict[int, str] = {}
+        ties: dict[int, Any] = {}
         for relation in self.file.by_type("IfcRelAssignsToProduct"):
             try:
                 for item in relation[4] or ():
@@ -221,6 +228,10 @@ class _Reader:
                 _tie(ties, relation[5], relation[4])
             except MALFORMED as error:
                 self.notes.malformed(relation, error)
+        for whole, parts in self.varying.items():
+            for part in parts:
+                if whole in ties:
+                    ties.setdefault(part.id(), ties[whole])
         return ties
 
     def _storeys(self) -> tuple[tuple[str, float], ...]:
@@ -336,9 +347,9 @@ class _Reader:
             )
 
 
-def _tie(ties: dict[int, str], item: Any, element: Any) -> None:
+def _tie(ties: dict[int, Any], item: Any, element: Any) -> None:
     if is_kind(item, "IfcStructuralItem") and is_kind(element, "IfcElement"):
-        ties.setdefault(item.id(), element[0])
+        ties.setdefault(item.id(), element)
 
 
 def _by_type(file: Any, ifc_class: str) -> Iterable[Any]:

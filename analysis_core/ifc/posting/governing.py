@@ -7,12 +7,13 @@ element.  Positions here count from the element's own start; signs stay those of
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import replace
 from typing import NamedTuple
 
 import numpy as np
 
-from analysis_core.model import Member
+from analysis_core.model import Member, Tie
 from analysis_core.results import Extreme, Floats, LineResult, MemberEnvelope, Outcome
 
 STRENGTH = "strength"
@@ -86,14 +87,35 @@ class _Found(NamedTuple):
 
 
 def element_parts(outcome: Outcome) -> dict[str, list[Part]]:
-    """Return the members of each element in every balanced line, in the order of the lines."""
+    """Return the members of each element in every balanced line, in the order of the lines.
+
+    A building element that members of an analysis model stand for has their parts.
+    """
     parts: dict[str, list[Part]] = {}
     for result in outcome.lines:
         if result.status == "balanced":
             for member in result.line.members:
                 if member.element:
                     parts.setdefault(member.element, []).append(Part(result, member))
+    for tie in outcome.model.ties:
+        for part in parts.get(tie.item, ()):
+            on_element = Part(part.result, _tied(part.member, tie))
+            parts.setdefault(tie.element, []).append(on_element)
     return parts
+
+
+def tied_elements(ties: Iterable[Tie]) -> dict[str, str]:
+    """Return the building element that each item of an analysis model stands for."""
+    return {tie.item: tie.element for tie in ties}
+
+
+def _tied(member: Member, tie: Tie) -> Member:
+    offset = member.element_offset
+    return replace(
+        member,
+        element_offset=tie.offset - offset if tie.reversed_ else tie.offset + offset,
+        reversed_=member.reversed_ != tie.reversed_,
+    )
 
 
 def element_effects(element: str, parts: Sequence[Part]) -> ElementEffects | None:

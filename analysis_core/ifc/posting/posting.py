@@ -213,7 +213,7 @@ class Posting:
                 effects.write(found)
                 if tables:
                     sets.add(found.element, DIAGRAMS, tables)
-                record.write(found.element, found.results)
+                record.write(found.element, found.results, self._members(found.element))
             yield begin
         for element, reactions in self._supports.items():
             if element in self._elements:
@@ -223,6 +223,11 @@ class Posting:
                     self._findings.append(_not_finite(element, None))
         yield len(known)
 
+    def _members(self, element: str) -> list[str]:
+        """The structural members that stand for a building element."""
+        members = (part.member.element for part in self._parts[element])
+        return [m for m in dict.fromkeys(members) if m != element]
+
     def _effects(
         self, elements: Sequence[tuple[str, list[Part]]], record: RecordWriter
     ) -> list[ElementEffects]:
@@ -231,7 +236,8 @@ class Posting:
         for element, parts in elements:
             found = element_effects(element, parts)
             if found is None:
-                record.write(element, list({id(p.result): p.result for p in parts}.values()))
+                results = list({id(p.result): p.result for p in parts}.values())
+                record.write(element, results, self._members(element))
             elif not found.finite:
                 self._findings.append(_not_finite(element, found.results[0].line.mark))
             else:

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import json
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Collection, Mapping, Sequence
 from datetime import UTC, datetime
 
 from analysis_core import __version__
@@ -182,14 +182,23 @@ class RecordWriter:
         )
         self._known: dict[tuple[int, ...], str] = {}
 
-    def write(self, element: str, results: Sequence[LineResult]) -> None:
-        """Write the set of one element of these lines."""
+    def write(
+        self, element: str, results: Sequence[LineResult], members: Collection[str] = ()
+    ) -> None:
+        """Write the set of one element of these lines.
+
+        ``members``: GlobalIds of the structural members that stand for a building element.
+        """
         key = tuple(map(id, results))
         refs = self._known.get(key)
         if refs is None:
             numbers = [self._method, *self._checks(results), self._rules,
                        self._fingerprint(results), *self._basis(results), *self._rest]  # fmt: skip
             refs = self._known[key] = ",".join(f"#{n}" for n in numbers)
+        if members:
+            named = string(", ".join(members))
+            body = f"IFCPROPERTYSINGLEVALUE('AnalysedAs',$,IFCTEXT({named}),$)"
+            refs += f",#{self._sets.lines.shared(body)}"
         self._sets.add(element, RECORD, refs)
 
     def _checks(self, results: Sequence[LineResult]) -> list[int]:

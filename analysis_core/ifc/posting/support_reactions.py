@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass, field
 
-from analysis_core.ifc.posting.governing import STRENGTH
+from analysis_core.ifc.posting.governing import STRENGTH, tied_elements
 from analysis_core.ifc.posting.property_sets import REACTIONS, SetWriter
 from analysis_core.ifc.step.values import LABEL_LENGTH
 from analysis_core.results import LineResult, Outcome, ReactionEnvelope
@@ -50,18 +50,24 @@ class SupportReactions:
 
 
 def support_reactions(outcome: Outcome) -> dict[str, SupportReactions]:
-    """Return the reactions of every supporting element, in the order of the lines."""
+    """Return the reactions of every supporting element, in the order of the lines.
+
+    A building element that a node or member of an analysis model stands for has its reactions.
+    """
     found: dict[str, SupportReactions] = {}
+    tied = tied_elements(outcome.model.ties)
     for result in outcome.lines:
         if result.status != "balanced":
             continue
         envelope = result.envelopes.get(STRENGTH)
         by_joint = {r.joint: r for r in envelope.reactions} if envelope is not None else {}
         for joint in result.line.joints:
-            if joint.support is not None and joint.element:
-                entry = found.get(joint.element)
+            if joint.support is None or not joint.element:
+                continue
+            for element in filter(None, (joint.element, tied.get(joint.element))):
+                entry = found.get(element)
                 if entry is None:
-                    entry = found[joint.element] = SupportReactions(joint.element)
+                    entry = found[element] = SupportReactions(element)
                 _add(entry, result, joint.id, by_joint.get(joint.id))
     return found
 
