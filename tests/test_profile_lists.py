@@ -12,7 +12,7 @@ from analysis_core.cli import main
 from analysis_core.errors import JobError
 from analysis_core.ifc.updating.stock import table_profile
 from analysis_core.job.profile_lists import is_profile_list, profile_list
-from analysis_core.job.reader import load, parse
+from analysis_core.job.reader import load, parse, with_section_tables
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 MODEL = SAMPLES / "quarry_lane_physical_ifc4.ifc"
@@ -162,13 +162,23 @@ def test_nothing_that_fits_and_options_that_belong_together_are_said(tmp_path, c
 def test_the_models_own_profile_takes_the_place_of_a_rougher_one(tmp_path):
     path = tmp_path / "l.csv"
     # As in the model but for the fillets, and another profile altogether.
-    path.write_text("I,IPE 300,H,150,300,7.1,10.7\nI,IPE 270,H,300,300,20,20\n", encoding="utf-8")
+    path.write_text("I,IPE300,H,150,300,7.1,10.7\nI,IPE 270,H,300,300,20,20\n", encoding="utf-8")
     choices, told = pipeline.lightest(MODEL, str(path), load(JOB), marks=["FF-04"], only=["I*"])
 
     (choice,) = choices
-    assert [t.name for t in choice.tried] == ["IPE 300"]
+    assert [(t.name, t.origin) for t in choice.tried] == [("IPE 300", "model")]
     assert choice.tried[0].mass == pytest.approx(42.2, abs=0.05)  # with fillets, EN 10365
     assert {f.slug for f in told} >= {"profile-of-model", "profile-clashes"}
+
+
+def test_another_profile_of_nearly_the_same_name_stays_one_of_its_own(tmp_path):
+    path = tmp_path / "l.csv"
+    path.write_text("I,IPE300,H,300,300,20,20\n", encoding="utf-8")
+    choices, _ = pipeline.lightest(MODEL, str(path), load(JOB), marks=["FF-04"])
+    assert [t.name for t in choices[0].tried] == ["IPE 300"]  # the lighter one stands there
+    settings = with_section_tables(load(JOB), [path])
+    (candidate,) = pipeline.offered(pipeline.stock(MODEL), settings, "job").candidates
+    assert (candidate.name, candidate.origin) == ("IPE300", "l.csv")
 
 
 def test_the_list_of_the_host_is_understood_row_by_row():

@@ -7,6 +7,7 @@ tell; what was left out is said.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from fnmatch import fnmatchcase
@@ -19,8 +20,8 @@ from analysis_core.model import Section
 from analysis_core.settings import Settings, TableSection
 
 MODEL, JOB = "model", "job"
-# A profile of the same name in the model, without fillets say, is the same one up to here.
-_SAME_PROFILE = 0.1
+# Of a profile of the same name in the model, with fillets say, area and outline may differ so.
+_SAME_AREA, _SAME_OUTLINE = 0.1, 0.01
 # Common practice, for profiles that say nothing of their material.
 _WALLED = frozenset({"channel", "angle", "tube", "hollow rectangle", "zed", "lipped channel"})
 _NOT_MADE_OF = {
@@ -69,28 +70,36 @@ def of_table(
 ) -> Offer:
     """Return the sections of the section table that fit ``only``, as they would be written.
 
-    A profile of the model takes the place of one from a list that has its name; one that is
-    another altogether is left out.  Raises JobError where a section cannot be drawn, or where the
-    engineer states one otherwise than the model has it.
+    A profile of the model takes the place of one from a list that has its name, whatever its
+    spaces, and about its dimensions; one that is another altogether is left out.  Raises JobError
+    where a section cannot be drawn, or where the engineer states one otherwise than the model has
+    it.
     """
-    found, taken, clashing = [], [], []
+    found: list[Candidate] = []
+    taken: list[str] = []
+    clashing: list[str] = []
+    by_key = {_key(name): name for name in stock.profiles}
     for row in settings.section_table:
         if not _fits(row.name, row.categories, only):
             continue
-        section, known = draw(row).section(), stock.profiles.get(row.name)
+        section = draw(row).section()
+        name = by_key.get(_key(row.name), row.name) if row.origin else row.name
+        known = stock.profiles.get(name)
         own = known.section() if known is not None else None
-        if own is not None and not alike(own, section):
-            if not row.origin:
-                raise JobError(
-                    f"The profile '{row.name}' of the model has other dimensions than that of the "
-                    f"section table. Give the one in the table another name."
-                )
-            if abs(own.area - section.area) > _SAME_PROFILE * own.area:
-                clashing.append(row.name)
-                continue
-            taken.append(row.name)
-            section = own
-        found.append(Candidate(row.name, section, row.categories, row.origin or JOB))
+        if own is None or alike(own, section):
+            found.append(Candidate(row.name, section, row.categories, row.origin or JOB))
+        elif not row.origin:
+            raise JobError(
+                f"The profile '{row.name}' of the model has other dimensions than that of the "
+                f"section table. Give the one in the table another name."
+            )
+        elif _same_profile(own, section):
+            taken.append(name)
+            found.append(Candidate(name, own, row.categories, MODEL))
+        elif name == row.name:
+            clashing.append(name)
+        else:
+            found.append(Candidate(row.name, section, row.categories, row.origin))
     return Offer(tuple(found), tuple(_notes(taken, clashing)))
 
 
@@ -125,6 +134,18 @@ def _fits(name: str, categories: Sequence[str], patterns: Sequence[str]) -> bool
         fnmatchcase(text.casefold(), pattern.strip().casefold())
         for pattern in patterns
         for text in (name, *categories)
+    )
+
+
+def _key(name: str) -> str:
+    """A name without what writers leave out or spell otherwise: "IPE 300", "ipe300"."""
+    return re.sub(r"[\s_-]", "", name.casefold()).replace("×", "x")
+
+
+def _same_profile(one: Section, other: Section) -> bool:
+    return abs(one.area - other.area) <= _SAME_AREA * one.area and all(
+        abs(a - b) <= _SAME_OUTLINE * a
+        for a, b in ((one.depth, other.depth), (one.width, other.width))
     )
 
 

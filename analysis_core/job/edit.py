@@ -53,6 +53,19 @@ def with_entry(text: str, section: str, entry: Mapping[str, Any]) -> str:
     return _checked(changed, wanted)
 
 
+def as_list(text: str, section: str) -> str:
+    """Return the text with a section that is a single word written as a list of it."""
+    root = _root(text)
+    value = _value(root, section)
+    if not isinstance(value, yaml.ScalarNode) or not isinstance(_data(text)[section], str):
+        return text
+    wanted = _data(text)
+    wanted[section] = [wanted[section]]
+    written = text[_start(value) : _last_index(value)]
+    changed = _replaced(text, _start(value), _last_index(value), f"[{written}]")
+    return _checked(changed, wanted)
+
+
 def with_replaced(text: str, section: str, index: int, entry: Mapping[str, Any]) -> str:
     """Return the text with one entry of a list exchanged."""
     wanted = _data(text)

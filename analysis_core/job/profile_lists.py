@@ -155,8 +155,8 @@ def _turned(name: str, lying: Sequence[str]) -> Finding:
         "note",
         "profile-upright",
         f"The profile list '{name}' states {len(lying)} hollow sections wider than deep "
-        f"({listed(lying)}). They are taken upright, the greater side as depth, as EN 10210-2 and "
-        f"EN 10219-2 name them.",
+        f"({listed(lying, most=2)}). They are taken upright, the greater side as depth, as "
+        f"EN 10210-2 and EN 10219-2 name them.",
     )
 
 

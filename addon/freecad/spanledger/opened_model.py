@@ -61,6 +61,7 @@ class OpenedModel:
     _checked: dict[tuple[str, str], Checks] = field(default_factory=dict)
     shape: BuildingShape | None = None
     """The bodies of the building, once they were made."""
+    _settings: dict[str, Settings] = field(default_factory=dict)
     done: list[Decision] = field(default_factory=list)
     undone: list[Decision] = field(default_factory=list)
 
@@ -73,13 +74,13 @@ class OpenedModel:
         path = Path(path)
         job_path = Path(job_path) if job_path else job_beside(path)
         text = _read(job_path) if job_path.exists() else ""
-        job.parse(text)
+        job.parse(text, folder=job_path.parent)
         return cls(path, job_path, text)
 
     @property
     def settings(self) -> Settings:
         """What the job file says now; a rule set of the user's own is sought beside it."""
-        settings = _parsed(self.text)
+        settings = self._parsed(self.text)
         rules = settings.rules
         if rules.name.endswith((".yaml", ".yml")) and not Path(rules.name).is_absolute():
             beside = str(self.job_path.resolve().parent / rules.name)
@@ -96,7 +97,7 @@ class OpenedModel:
 
         Raises JobError where it is not understood or cannot be written; then nothing changed.
         """
-        _parsed(text)
+        self._parsed(text)
         if text == self.text:
             return
         self._write(text)
@@ -134,6 +135,8 @@ class OpenedModel:
 
         stamp = _stamp(self.path)
         reading = self.reading
+        if reading is not None and stamp == self.stamp and settings.members:
+            reading = self._with_stock(reading, settings)
         if reading is None or stamp != self.stamp or not reading.serves(settings):
             reading = pipeline.read(self.path, settings, progress=progress)
         memory = self.memory or Memory()
@@ -142,6 +145,31 @@ class OpenedModel:
         self.reading, self.stamp, self.memory = reading, stamp, memory
         self.in_file = pipeline.posted_states(survey, settings)
         return outcome
+
+    def stocked(self, settings: Settings, progress: Callable[[str, float], None]) -> Reading:
+        """Return what stands in the file with its profiles and materials; these are then kept.
+
+        May be called in another thread.  Raises IfcReadError, and whatever ``progress`` raises.
+        """
+        from analysis_core import pipeline
+
+        stamp, reading = _stamp(self.path), self.reading
+        if (
+            reading is None
+            or stamp != self.stamp
+            or not reading.serves(replace(settings, members=()))
+        ):
+            reading = pipeline.read(self.path, settings, progress=progress)
+        progress("Reading", 0.5)
+        self.reading, self.stamp = self._with_stock(reading, settings), stamp
+        return self.reading
+
+    def _with_stock(self, reading: Reading, settings: Settings) -> Reading:
+        from analysis_core import pipeline
+
+        if reading.stock is not None:
+            return reading
+        return replace(reading, stock=pipeline.stock(self.path, settings))
 
     def check(
         self, outcome: Outcome, settings: Settings, progress: Callable[[str, float], None]
@@ -197,7 +225,8 @@ class OpenedModel:
         Raises JobError where the job file cannot be read or understood.
         """
         text = _read(self.job_path) if self.job_path.exists() else ""
-        job.parse(text)
+        self._settings.clear()  # a section table beside it may have changed, too
+        self._parsed(text)
         self.reading = None
         if text != self.text:
             self.text = text
@@ -223,6 +252,14 @@ class OpenedModel:
         self.previous, self.outcome = self.outcome, outcome
         self.stale, self.checks = False, {}
 
+    def _parsed(self, text: str) -> Settings:
+        """The settings of a text; the last few are kept, undo and redo come back to them."""
+        if text not in self._settings:
+            if len(self._settings) > 8:
+                self._settings.clear()
+            self._settings[text] = job.parse(text, folder=self.job_path.parent)
+        return self._settings[text]
+
     def _write(self, text: str) -> None:
         beside = self.job_path.with_name(f".{self.job_path.name}.new")
         try:
@@ -242,11 +279,6 @@ def job_beside(path: Path) -> Path:
     return path.with_suffix(".yaml")
 
 
-@lru_cache(maxsize=8)
-def _parsed(text: str) -> Settings:
-    return job.parse(text)
-
-
 def _said_of_checks(settings: Settings) -> str:
     """What checks depend on beside the fingerprint of a line's effects."""
     return repr(
@@ -256,7 +288,7 @@ def _said_of_checks(settings: Settings) -> str:
 
 @lru_cache(maxsize=8)
 def _units(text: str) -> DisplayUnits:
-    display = _parsed(text).display
+    display = job.parse(text).display
     return display_units(display.system, display.units)
 
 

@@ -42,6 +42,8 @@ CORE_WORDS = (
     words.noop("Enveloping"),
     words.noop("Checking"),
     words.noop("Posting"),
+    words.noop("Choosing"),
+    words.noop("Writing"),
     words.noop("moment"),
 )
 

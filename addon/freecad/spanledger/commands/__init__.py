@@ -6,7 +6,9 @@ import FreeCADGui
 
 from . import (
     balance_lines,
+    choose_section,
     compare_revision,
+    find_lightest,
     open_model,
     post_results,
     redo_decision,
@@ -14,6 +16,7 @@ from . import (
     show_desk,
     undo_decision,
     use_job,
+    write_sheet,
 )
 
 SEPARATOR = "Separator"
@@ -27,8 +30,11 @@ def register() -> list[str]:
         "Spanledger_Balance": balance_lines.BalanceLines(),
         "Spanledger_Undo": undo_decision.UndoDecision(),
         "Spanledger_Redo": redo_decision.RedoDecision(),
+        "Spanledger_Section": choose_section.ChooseSection(),
+        "Spanledger_Lightest": find_lightest.FindLightest(),
         "Spanledger_Compare": compare_revision.CompareRevision(),
         "Spanledger_Post": post_results.PostResults(),
+        "Spanledger_Sheet": write_sheet.WriteSheet(),
         "Spanledger_Building": show_building.ShowBuilding(),
         "Spanledger_Desk": show_desk.ShowDesk(),
     }
@@ -37,6 +43,7 @@ def register() -> list[str]:
     return [
         "Spanledger_Open", "Spanledger_Job", "Spanledger_Balance", SEPARATOR,
         "Spanledger_Undo", "Spanledger_Redo", SEPARATOR,
-        "Spanledger_Compare", "Spanledger_Post", SEPARATOR,
+        "Spanledger_Section", "Spanledger_Lightest", SEPARATOR,
+        "Spanledger_Compare", "Spanledger_Post", "Spanledger_Sheet", SEPARATOR,
         "Spanledger_Building", "Spanledger_Desk",
     ]  # fmt: skip

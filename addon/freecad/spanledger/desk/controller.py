@@ -14,13 +14,14 @@ from ..opened_model import OpenedModel
 from ..present.checked import largest_uses
 from ..present.listing import Row, rows_of
 from ..present.moved import moved_words
-from ..present.posting import posted_words, preview
 from ..present.shades import shade_numbers, shades
 from ..qt import QtCore, QtWidgets
 from ..texts import translate
 from ..worker import Progress
+from .choosing import Choosing
 from .panels import Panels
 from .picture import Picture
+from .posting_desk import PostingDesk
 from .runs import Runs
 from .selection import SelectionLink
 from .watch import DocumentWatch, FileWatch
@@ -40,7 +41,7 @@ class Desk(QtCore.QObject):
         self.runs = Runs(self.panels.running, self.tell)
         self.link = SelectionLink(self)
         self.documents, self.files = DocumentWatch(self), FileWatch()
-        self.post_dialog: Any = None
+        self.choosing, self.posting = Choosing(self), PostingDesk(self)
         self.panels.list.chosen.connect(self.choose_line)
         self.panels.findings.wanted.connect(self.show_finding)
         strip = self.panels.strip
@@ -49,6 +50,8 @@ class Desk(QtCore.QObject):
         strip.canvas.picked.connect(self.choose_spot)
         strip.inspector.decided.connect(self.decide)
         strip.inspector.line_wanted.connect(self.choose_line)
+        strip.inspector.section_wanted.connect(self.choosing.ask_for_section)
+        strip.inspector.lightest_wanted.connect(self.choosing.ask_for_lightest)
         strip.shading_changed.connect(lambda _way: self._shade())
         self.panels.bearings.wanted.connect(self.show_bearing)
         self.panels.changes.line_wanted.connect(self.choose_line)
@@ -104,6 +107,10 @@ class Desk(QtCore.QObject):
     def can_post(self) -> bool:
         """Whether there are results to write."""
         return self.solved is not None and not self.runs.busy
+
+    def can_choose(self) -> bool:
+        """Whether a line is chosen that can be given other sections."""
+        return self.can_post() and self.line is not None
 
     # Models.
     def ask_for_model(self) -> None:
@@ -225,32 +232,17 @@ class Desk(QtCore.QObject):
     # Posting.
     def ask_to_post(self) -> None:
         """Show what will be written, and write it when the user says so."""
-        from .post_dialog import PostDialog
-
-        opened = self.opened
-        shown = preview(opened.outcome, opened.units)
-        self.post_dialog = PostDialog(opened.path, shown, FreeCADGui.getMainWindow())
-        self.post_dialog.wanted.connect(self.post)
-        self.post_dialog.show()
+        self.posting.ask()
 
     def post(self, target: str | Path) -> None:
         """Write the results into a copy of the model, or into the model itself."""
-        from analysis_core import pipeline
+        self.posting.post(target, members=False)
 
-        opened, name = self.opened, FreeCAD.ActiveDocument.Name
-        outcome = opened.outcome
-
-        def task(progress: Progress) -> Any:
-            return pipeline.post(outcome, opened.path, target, progress=progress)
-
-        def done(report: Any) -> None:
-            opened.take_posted(outcome, Path(target))
-            self._watch()
-            if self.opened_models.get(name) is opened:
-                self._show_states(name)
-            self.tell(posted_words(report, str(target)), problem=False)
-
-        self.runs.start(task, done)
+    def posted(self, name: str, opened: OpenedModel) -> None:
+        """Show that results were written."""
+        self._watch()
+        if self.opened_models.get(name) is opened:
+            self._show_states(name)
 
     # Choosing.
     def choose_line(self, line: int | None) -> None:

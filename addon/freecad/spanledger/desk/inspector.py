@@ -41,6 +41,8 @@ class Inspector(QtWidgets.QScrollArea):
 
     decided = Signal(str, object)
     line_wanted = Signal(int)
+    section_wanted = Signal()
+    lightest_wanted = Signal()
 
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
@@ -65,6 +67,7 @@ class Inspector(QtWidgets.QScrollArea):
         label = QtWidgets.QLabel(hint)
         label.setWordWrap(True)
         self._layout.addWidget(label)
+        self._members_form()
         self._rules_form(settings.rules.name)
         self._redistribution_form(result.line.mark)
         self._cases_form(outcome)
@@ -104,6 +107,8 @@ class Inspector(QtWidgets.QScrollArea):
             where = decisions.end_of(result.line, member, at_end=at_end)
             if where is not None:
                 self._release_form(result.line.mark, member, at_end, spring, where, units)
+        if part.role == "span" and part.element:
+            self._members_form()
         if part.element:
             self._action_form(result.line.mark, part.element, outcome, units)
             self._section_form(result.line.mark, part, units)
@@ -139,6 +144,20 @@ class Inspector(QtWidgets.QScrollArea):
             self._layout.insertWidget(2 + number, lead)
 
     # Forms.
+    def _members_form(self) -> None:
+        section = button(
+            "SpanledgerChooseSection", translate("Spanledger", "Section and material…"),
+            translate("Spanledger", "Give the members another section or material"),
+        )  # fmt: skip
+        lightest = button(
+            "SpanledgerSeekLightest", translate("Spanledger", "Lightest section…"),
+            translate("Spanledger", "Find the lightest section that suffices"),
+        )  # fmt: skip
+        section.clicked.connect(self.section_wanted)
+        lightest.clicked.connect(self.lightest_wanted)
+        self._layout.addWidget(section)
+        self._layout.addWidget(lightest)
+
     def _rules_form(self, current: str) -> None:
         from analysis_core.rules import names
 

@@ -14,7 +14,8 @@ from .fields import button, entry
 class PostDialog(QtWidgets.QDialog):
     """Stays open beside FreeCAD's window; nothing is written before "Post" is pressed."""
 
-    wanted = Signal(str)
+    wanted = Signal(str, bool)
+    """Where to, and whether the members are changed in the model too."""
 
     def __init__(self, source: Path, shown: PostPreview, parent: Any = None) -> None:
         super().__init__(parent)
@@ -32,6 +33,14 @@ class PostDialog(QtWidgets.QDialog):
         summary = QtWidgets.QLabel(shown.summary)
         summary.setWordWrap(True)
         self.tree = _tree(shown)
+        self.members = QtWidgets.QGroupBox(
+            translate("Spanledger", "Change the sections and materials in the model too")
+        )
+        self.members.setObjectName("SpanledgerPostMembers")
+        self.members.setCheckable(True)
+        self.members.setVisible(bool(shown.changes))
+        changes = QtWidgets.QVBoxLayout(self.members)
+        changes.addWidget(_changes_tree(shown))
         self.post = button("SpanledgerPostNow", translate("Spanledger", "Post"))
         self.post.setDefault(True)
         cancel = button("SpanledgerPostCancel", translate("Spanledger", "Cancel"))
@@ -55,6 +64,7 @@ class PostDialog(QtWidgets.QDialog):
         buttons.addWidget(cancel)
         layout = QtWidgets.QVBoxLayout(self)
         layout.addWidget(summary)
+        layout.addWidget(self.members, 1)
         layout.addWidget(self.tree, 1)
         layout.addWidget(self.copy)
         layout.addLayout(where)
@@ -77,7 +87,8 @@ class PostDialog(QtWidgets.QDialog):
     def _post(self) -> None:
         if self.target():
             self.accept()
-            self.wanted.emit(self.target())
+            changing = not self.members.isHidden() and self.members.isChecked()
+            self.wanted.emit(self.target(), changing)
 
 
 def _tree(shown: PostPreview) -> Any:
@@ -100,4 +111,23 @@ def _tree(shown: PostPreview) -> Any:
     if tree.topLevelItemCount():
         tree.expandItem(tree.topLevelItem(0))
         tree.expandItem(tree.topLevelItem(0).child(0))
+    return tree
+
+
+def _changes_tree(shown: PostPreview) -> Any:
+    tree = QtWidgets.QTreeWidget()
+    tree.setObjectName("SpanledgerPostChanges")
+    tree.setAccessibleName(translate("Spanledger", "What is changed in the model"))
+    tree.setRootIsDecorated(False)
+    tree.setAlternatingRowColors(True)
+    tree.setHeaderLabels(
+        [translate("Spanledger", "Element"), translate("Spanledger", "What"),
+         translate("Spanledger", "Is"), translate("Spanledger", "Becomes")]
+    )  # fmt: skip
+    stays = translate("Spanledger", "stays, though it may no longer fit")
+    for change in shown.changes:
+        row = [change.element, change.what, change.old, change.new or stays]
+        tree.addTopLevelItem(QtWidgets.QTreeWidgetItem(row))
+    for column in range(4):
+        tree.resizeColumnToContents(column)
     return tree

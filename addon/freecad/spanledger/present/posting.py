@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 from analysis_core.ifc.posting.governing import ElementEffects, element_effects, element_parts
 from analysis_core.ifc.posting.support_reactions import SupportReactions, support_reactions
 from analysis_core.ifc.posting.writer import PostReport
+from analysis_core.ifc.updating import Change
 from analysis_core.report.tables import safe
 from analysis_core.results import Outcome
 from analysis_core.units import DisplayUnits
@@ -27,6 +28,16 @@ class PostedSet:
 
 
 @dataclass(frozen=True, slots=True)
+class MemberChange:
+    """One thing of an element that would be changed; ``new`` "" where it stays, fitting or not."""
+
+    element: str
+    what: str
+    old: str
+    new: str
+
+
+@dataclass(frozen=True, slots=True)
 class PostPreview:
     """Sets in the order of the elements, and what is left out of the list."""
 
@@ -36,6 +47,8 @@ class PostPreview:
     lines: int
     left_out: tuple[str, ...]
     """Marks of lines that were not analysed."""
+    changes: tuple[MemberChange, ...] = ()
+    """What the members given others would change in the model."""
 
     @property
     def summary(self) -> str:
@@ -52,8 +65,8 @@ class PostPreview:
         return words
 
 
-def preview(outcome: Outcome, units: DisplayUnits) -> PostPreview:
-    """Return what posting this outcome will write."""
+def preview(outcome: Outcome, units: DisplayUnits, changes: Sequence[Change] = ()) -> PostPreview:
+    """Return what posting this outcome will write, and ``changes`` of members before it."""
     names = dict(outcome.model.names)
     parts = element_parts(outcome)
     reactions = support_reactions(outcome)
@@ -71,7 +84,12 @@ def preview(outcome: Outcome, units: DisplayUnits) -> PostPreview:
         supports=len(reactions),
         lines=len(balanced),
         left_out=tuple(safe(r.line.mark) for r in outcome.lines if r.status != "balanced"),
-    )
+        changes=tuple(
+            MemberChange(_name(c.element, {c.element: c.name}), safe(c.what), safe(c.old),
+                         safe(c.new))
+            for c in changes
+        ),
+    )  # fmt: skip
 
 
 def posted_words(report: PostReport, target: str) -> str:

@@ -12,6 +12,14 @@
       <translation>'{path}' ist nicht da; die Trägerzüge werden gezeigt, wie sie gespeichert sind. Das Modell von seinem jetzigen Ort neu öffnen.</translation>
     </message>
     <message>
+      <source>'{path}' would be overwritten; choose another file.</source>
+      <translation>„{path}“ würde überschrieben; wählen Sie eine andere Datei.</translation>
+    </message>
+    <message>
+      <source>(itself)</source>
+      <translation>(selbst)</translation>
+    </message>
+    <message>
       <source>1 other line changed: {lines}.</source>
       <translation>1 weiterer Trägerzug geändert: {lines}.</translation>
     </message>
@@ -48,6 +56,14 @@
       <translation>Eine Umhüllende fasst viele Ausgleiche zusammen. Einen Lastfall oder eine Kombination wählen, um den zugehörigen zu sehen.</translation>
     </message>
     <message>
+      <source>Apply</source>
+      <translation>Anwenden</translation>
+    </message>
+    <message>
+      <source>As the model has it</source>
+      <translation>Wie im Modell</translation>
+    </message>
+    <message>
       <source>At</source>
       <translation>Bei</translation>
     </message>
@@ -68,8 +84,20 @@
       <translation>Auflagerbreite</translation>
     </message>
     <message>
+      <source>Becomes</source>
+      <translation>Wird</translation>
+    </message>
+    <message>
+      <source>Calculation sheet</source>
+      <translation>Berechnungsblatt</translation>
+    </message>
+    <message>
       <source>Cancel</source>
       <translation>Abbrechen</translation>
+    </message>
+    <message>
+      <source>Candidate</source>
+      <translation>Kandidat</translation>
     </message>
     <message>
       <source>Carried by</source>
@@ -84,8 +112,16 @@
       <translation>Lastfall {case} ist {nature}</translation>
     </message>
     <message>
+      <source>Change</source>
+      <translation>Ändern</translation>
+    </message>
+    <message>
       <source>Change it</source>
       <translation>Ändern</translation>
+    </message>
+    <message>
+      <source>Change the sections and materials in the model too</source>
+      <translation>Auch Querschnitte und Baustoffe im Modell ändern</translation>
     </message>
     <message>
       <source>Changes</source>
@@ -112,8 +148,16 @@
       <translation>Wählen…</translation>
     </message>
     <message>
+      <source>Choosing</source>
+      <translation>Auswählen</translation>
+    </message>
+    <message>
       <source>Click a bearing, a span or an action to decide on it.</source>
       <translation>Ein Auflager, ein Feld oder eine Einwirkung anklicken, um darüber zu entscheiden.</translation>
+    </message>
+    <message>
+      <source>Close</source>
+      <translation>Schließen</translation>
     </message>
     <message>
       <source>Combination</source>
@@ -138,6 +182,10 @@
     <message>
       <source>Deflection limit</source>
       <translation>Durchbiegungsgrenze</translation>
+    </message>
+    <message>
+      <source>Depth</source>
+      <translation>Höhe</translation>
     </message>
     <message>
       <source>Distribution</source>
@@ -196,6 +244,18 @@
       <translation>Umhüllen</translation>
     </message>
     <message>
+      <source>Filter of the sections</source>
+      <translation>Filter der Querschnitte</translation>
+    </message>
+    <message>
+      <source>Find</source>
+      <translation>Suchen</translation>
+    </message>
+    <message>
+      <source>Find the lightest section that suffices</source>
+      <translation>Den leichtesten ausreichenden Querschnitt suchen</translation>
+    </message>
+    <message>
       <source>Findings</source>
       <translation>Befunde</translation>
     </message>
@@ -204,12 +264,28 @@
       <translation>Befunde ({count})</translation>
     </message>
     <message>
+      <source>For</source>
+      <translation>Für</translation>
+    </message>
+    <message>
       <source>From</source>
       <translation>Von</translation>
     </message>
     <message>
+      <source>Give the members another section or material</source>
+      <translation>Den Stäben einen anderen Querschnitt oder Baustoff geben</translation>
+    </message>
+    <message>
       <source>Go to that line</source>
       <translation>Zu diesem Trägerzug gehen</translation>
+    </message>
+    <message>
+      <source>Governed by</source>
+      <translation>Maßgebend</translation>
+    </message>
+    <message>
+      <source>HTML files (*.html)</source>
+      <translation>HTML-Dateien (*.html)</translation>
     </message>
     <message>
       <source>Held</source>
@@ -252,6 +328,10 @@
       <translation>Trägheitsmoment</translation>
     </message>
     <message>
+      <source>Is</source>
+      <translation>Ist</translation>
+    </message>
+    <message>
       <source>It is of this nature</source>
       <translation>Er ist von dieser Art</translation>
     </message>
@@ -288,6 +368,22 @@
       <translation>Knoten {number}: {held}</translation>
     </message>
     <message>
+      <source>Kind</source>
+      <translation>Art</translation>
+    </message>
+    <message>
+      <source>Kind of section</source>
+      <translation>Art des Querschnitts</translation>
+    </message>
+    <message>
+      <source>Kinds</source>
+      <translation>Arten</translation>
+    </message>
+    <message>
+      <source>Kinds of section to choose among</source>
+      <translation>Arten von Querschnitten zur Auswahl</translation>
+    </message>
+    <message>
       <source>Largest</source>
       <translation>Größte</translation>
     </message>
@@ -312,6 +408,18 @@
       <translation>Setzen lassen</translation>
     </message>
     <message>
+      <source>Lightest section</source>
+      <translation>Leichtester Querschnitt</translation>
+    </message>
+    <message>
+      <source>Lightest sections: {names}</source>
+      <translation>Leichteste Querschnitte: {names}</translation>
+    </message>
+    <message>
+      <source>Lightest section…</source>
+      <translation>Leichtester Querschnitt…</translation>
+    </message>
+    <message>
       <source>Line</source>
       <translation>Trägerzug</translation>
     </message>
@@ -332,6 +440,14 @@
       <translation>Trägerzüge nach Geschoss</translation>
     </message>
     <message>
+      <source>Lines that get one section</source>
+      <translation>Trägerzüge, die einen gemeinsamen Querschnitt erhalten</translation>
+    </message>
+    <message>
+      <source>Lines to choose for</source>
+      <translation>Trägerzüge, für die gewählt wird</translation>
+    </message>
+    <message>
       <source>Load cases</source>
       <translation>Lastfälle</translation>
     </message>
@@ -340,8 +456,20 @@
       <translation>Zeichen, Geschoss, Zustand oder GlobalId</translation>
     </message>
     <message>
+      <source>Mass</source>
+      <translation>Masse</translation>
+    </message>
+    <message>
+      <source>Mass, kg/m</source>
+      <translation>Masse, kg/m</translation>
+    </message>
+    <message>
       <source>Material</source>
       <translation>Baustoff</translation>
+    </message>
+    <message>
+      <source>Members to change</source>
+      <translation>Stäbe, die geändert werden</translation>
     </message>
     <message>
       <source>Method</source>
@@ -364,6 +492,18 @@
       <translation>Momente von {mark} umgelagert</translation>
     </message>
     <message>
+      <source>Name, kind or source</source>
+      <translation>Name, Art oder Herkunft</translation>
+    </message>
+    <message>
+      <source>Names</source>
+      <translation>Namen</translation>
+    </message>
+    <message>
+      <source>Names of sections</source>
+      <translation>Namen von Querschnitten</translation>
+    </message>
+    <message>
       <source>Nature</source>
       <translation>Art</translation>
     </message>
@@ -380,6 +520,14 @@
       <translation>Ohne Geschoss</translation>
     </message>
     <message>
+      <source>None of {count} suffices.</source>
+      <translation>Keiner von {count} reicht aus.</translation>
+    </message>
+    <message>
+      <source>None ticked: whatever is made of the material of the lines, as far as names and shapes tell</source>
+      <translation>Nichts angekreuzt: alles, was aus dem Baustoff der Trägerzüge besteht, soweit Namen und Formen es sagen</translation>
+    </message>
+    <message>
       <source>Not analysed</source>
       <translation>Nicht berechnet</translation>
     </message>
@@ -392,6 +540,18 @@
       <translation>Auf {line} wirkt in {case} nichts.</translation>
     </message>
     <message>
+      <source>Nothing lighter suffices; nothing would change.</source>
+      <translation>Nichts Leichteres reicht aus; nichts würde sich ändern.</translation>
+    </message>
+    <message>
+      <source>Nothing was tried: {reason}.</source>
+      <translation>Nichts wurde versucht: {reason}.</translation>
+    </message>
+    <message>
+      <source>Now</source>
+      <translation>Jetzt</translation>
+    </message>
+    <message>
       <source>One more action</source>
       <translation>Noch eine Einwirkung</translation>
     </message>
@@ -402,6 +562,10 @@
     <message>
       <source>One step back</source>
       <translation>Ein Schritt zurück</translation>
+    </message>
+    <message>
+      <source>Only sections of these names; * stands for anything</source>
+      <translation>Nur Querschnitte dieser Namen; * steht für Beliebiges</translation>
     </message>
     <message>
       <source>Open IFC model</source>
@@ -504,8 +668,36 @@
       <translation>Querschnitt</translation>
     </message>
     <message>
+      <source>Section and material</source>
+      <translation>Querschnitt und Baustoff</translation>
+    </message>
+    <message>
+      <source>Section and material…</source>
+      <translation>Querschnitt und Baustoff…</translation>
+    </message>
+    <message>
       <source>Section of {mark}</source>
       <translation>Querschnitt von {mark}</translation>
+    </message>
+    <message>
+      <source>Sections that change: {count}; {mass} kg less in all.</source>
+      <translation>Geänderte Querschnitte: {count}; insgesamt {mass} kg weniger.</translation>
+    </message>
+    <message>
+      <source>Sections that change: {count}; {mass} kg more in all.</source>
+      <translation>Geänderte Querschnitte: {count}; insgesamt {mass} kg mehr.</translation>
+    </message>
+    <message>
+      <source>Sections that were tried</source>
+      <translation>Querschnitte, die versucht wurden</translation>
+    </message>
+    <message>
+      <source>Sections to choose from</source>
+      <translation>Querschnitte zur Auswahl</translation>
+    </message>
+    <message>
+      <source>Sections to pick from</source>
+      <translation>Querschnitte zum Auswählen</translation>
     </message>
     <message>
       <source>Settlement</source>
@@ -536,12 +728,28 @@
       <translation>Nur Trägerzüge mit allen diesen Wörtern zeigen</translation>
     </message>
     <message>
+      <source>Show only sections of this kind</source>
+      <translation>Nur Querschnitte dieser Art zeigen</translation>
+    </message>
+    <message>
+      <source>Show only sections with all of these words</source>
+      <translation>Nur Querschnitte mit all diesen Wörtern zeigen</translation>
+    </message>
+    <message>
       <source>Smallest reaction</source>
       <translation>Kleinste Auflagerkraft</translation>
     </message>
     <message>
       <source>Smallest, {unit}</source>
       <translation>Kleinste, {unit}</translation>
+    </message>
+    <message>
+      <source>Solves the lines with the sections found; can be undone</source>
+      <translation>Berechnet die Trägerzüge mit den gefundenen Querschnitten; lässt sich zurücknehmen</translation>
+    </message>
+    <message>
+      <source>Solves the lines with them; can be undone</source>
+      <translation>Berechnet die Trägerzüge damit; lässt sich zurücknehmen</translation>
     </message>
     <message>
       <source>Solving</source>
@@ -608,12 +816,24 @@
       <translation>Entfernen</translation>
     </message>
     <message>
+      <source>Take these</source>
+      <translation>Diese nehmen</translation>
+    </message>
+    <message>
       <source>Take this section</source>
       <translation>Diesen Querschnitt nehmen</translation>
     </message>
     <message>
+      <source>Takes back what these members were given</source>
+      <translation>Nimmt zurück, was diesen Stäben gegeben wurde</translation>
+    </message>
+    <message>
       <source>Takes the entry out of the job file, wherever it acts</source>
       <translation>Entfernt den Eintrag aus der Auftragsdatei, wo immer er wirkt</translation>
+    </message>
+    <message>
+      <source>The calculation sheet is in '{path}'.</source>
+      <translation>Das Berechnungsblatt steht in „{path}“.</translation>
     </message>
     <message>
       <source>The model does not fit into memory; close other work or split it.</source>
@@ -622,6 +842,10 @@
     <message>
       <source>The order in which joints are released</source>
       <translation>Die Reihenfolge, in der Knoten gelöst werden</translation>
+    </message>
+    <message>
+      <source>The use of {lines} grows beyond 100 %.</source>
+      <translation>Die Ausnutzung von {lines} steigt über 100 %.</translation>
     </message>
     <message>
       <source>This action comes from the model or its self weight; change it there, or add another one to the span.</source>
@@ -644,6 +868,10 @@
       <translation>Zum Ende</translation>
     </message>
     <message>
+      <source>Tries the sections from the lightest on; changes nothing</source>
+      <translation>Versucht die Querschnitte vom leichtesten an; ändert nichts</translation>
+    </message>
+    <message>
       <source>Unchanged lines too</source>
       <translation>Auch unveränderte</translation>
     </message>
@@ -664,12 +892,28 @@
       <translation>Wert</translation>
     </message>
     <message>
+      <source>Verdict</source>
+      <translation>Urteil</translation>
+    </message>
+    <message>
       <source>Verifying</source>
       <translation>Prüfen</translation>
     </message>
     <message>
       <source>Vertical</source>
       <translation>Lotrecht</translation>
+    </message>
+    <message>
+      <source>What</source>
+      <translation>Was</translation>
+    </message>
+    <message>
+      <source>What is changed in the model</source>
+      <translation>Was im Modell geändert wird</translation>
+    </message>
+    <message>
+      <source>What it does to the lines</source>
+      <translation>Was es bei den Trägerzügen bewirkt</translation>
     </message>
     <message>
       <source>What the 3D view shows along all lines</source>
@@ -680,6 +924,14 @@
       <translation>Was gefunden wurde</translation>
     </message>
     <message>
+      <source>Width</source>
+      <translation>Breite</translation>
+    </message>
+    <message>
+      <source>Writing</source>
+      <translation>Schreiben</translation>
+    </message>
+    <message>
       <source>alike</source>
       <translation>gleich</translation>
     </message>
@@ -688,8 +940,28 @@
       <translation>alle Knoten zugleich</translation>
     </message>
     <message>
+      <source>all kinds</source>
+      <translation>alle Arten</translation>
+    </message>
+    <message>
+      <source>all lines, kind by kind</source>
+      <translation>alle Trägerzüge, Art für Art</translation>
+    </message>
+    <message>
+      <source>all names; or IPE*, HEA*</source>
+      <translation>alle Namen; oder IPE*, HEA*</translation>
+    </message>
+    <message>
       <source>all states</source>
       <translation>alle Zustände</translation>
+    </message>
+    <message>
+      <source>all {count} lines of {section}</source>
+      <translation>alle {count} Trägerzüge aus {section}</translation>
+    </message>
+    <message>
+      <source>as it is: {names}</source>
+      <translation>wie es ist: {names}</translation>
     </message>
     <message>
       <source>balanced</source>
@@ -698,6 +970,10 @@
     <message>
       <source>bearing {width} wide</source>
       <translation>Auflager {width} breit</translation>
+    </message>
+    <message>
+      <source>becomes</source>
+      <translation>wird</translation>
     </message>
     <message>
       <source>brought up to date</source>
@@ -746,6 +1022,10 @@
     <message>
       <source>deflection</source>
       <translation>Durchbiegung</translation>
+    </message>
+    <message>
+      <source>depth</source>
+      <translation>Höhe</translation>
     </message>
     <message>
       <source>differs by {part}</source>
@@ -804,6 +1084,10 @@
       <translation>Nutzlast</translation>
     </message>
     <message>
+      <source>inertia</source>
+      <translation>Trägheitsmoment</translation>
+    </message>
+    <message>
       <source>into a copy</source>
       <translation>in eine Kopie</translation>
     </message>
@@ -820,6 +1104,10 @@
       <translation>sein Anfang</translation>
     </message>
     <message>
+      <source>job file</source>
+      <translation>Auftragsdatei</translation>
+    </message>
+    <message>
       <source>largest reaction</source>
       <translation>größte Auflagerkraft</translation>
     </message>
@@ -828,8 +1116,20 @@
       <translation>größtes Ungleichgewicht zuerst</translation>
     </message>
     <message>
+      <source>lightest that suffices</source>
+      <translation>leichtester, der ausreicht</translation>
+    </message>
+    <message>
+      <source>line {mark}</source>
+      <translation>Trägerzug {mark}</translation>
+    </message>
+    <message>
       <source>lines: {way}</source>
       <translation>Trägerzüge: {way}</translation>
+    </message>
+    <message>
+      <source>mass</source>
+      <translation>Masse</translation>
     </message>
     <message>
       <source>material {name}</source>
@@ -838,6 +1138,10 @@
     <message>
       <source>merged</source>
       <translation>vereinigt</translation>
+    </message>
+    <message>
+      <source>model</source>
+      <translation>Modell</translation>
     </message>
     <message>
       <source>moment</source>
@@ -924,6 +1228,14 @@
       <translation>eingetragen</translation>
     </message>
     <message>
+      <source>profiles of the model ({count})</source>
+      <translation>Profile des Modells ({count})</translation>
+    </message>
+    <message>
+      <source>profiles that FreeCAD has ({count})</source>
+      <translation>Profile, die FreeCAD hat ({count})</translation>
+    </message>
+    <message>
       <source>ready</source>
       <translation>bereit</translation>
     </message>
@@ -934,6 +1246,10 @@
     <message>
       <source>sagging</source>
       <translation>Feldmoment</translation>
+    </message>
+    <message>
+      <source>section table of the job file ({count})</source>
+      <translation>Querschnittstafel der Auftragsdatei ({count})</translation>
     </message>
     <message>
       <source>section {name}</source>
@@ -960,6 +1276,10 @@
       <translation>Schnee</translation>
     </message>
     <message>
+      <source>span {number} of {mark}</source>
+      <translation>Feld {number} von {mark}</translation>
+    </message>
+    <message>
       <source>split</source>
       <translation>geteilt</translation>
     </message>
@@ -972,6 +1292,10 @@
       <translation>überholt</translation>
     </message>
     <message>
+      <source>stays, though it may no longer fit</source>
+      <translation>bleibt, auch wenn es nicht mehr passen mag</translation>
+    </message>
+    <message>
       <source>strength</source>
       <translation>Tragfähigkeit</translation>
     </message>
@@ -982,6 +1306,10 @@
     <message>
       <source>temperature</source>
       <translation>Temperatur</translation>
+    </message>
+    <message>
+      <source>too weak</source>
+      <translation>zu schwach</translation>
     </message>
     <message>
       <source>turns {by}</source>
@@ -1056,6 +1384,10 @@
       <translation>{count} Hinweise</translation>
     </message>
     <message>
+      <source>{count} of another material were left out.</source>
+      <translation>{count} aus anderem Baustoff blieben außer Betracht.</translation>
+    </message>
+    <message>
       <source>{count} other lines changed: {lines}.</source>
       <translation>{count} weitere Trägerzüge geändert: {lines}.</translation>
     </message>
@@ -1092,8 +1424,28 @@
       <translation>{lines} Trägerzüge: Merkmalssätze an {members} Stäben und {supports} tragenden Bauteilen.</translation>
     </message>
     <message>
+      <source>{members} as modelled</source>
+      <translation>{members} wie im Modell</translation>
+    </message>
+    <message>
+      <source>{names} for {members}</source>
+      <translation>{names} für {members}</translation>
+    </message>
+    <message>
+      <source>{new} in place of {old}: {after} instead of {before} kg/m over {length} m.</source>
+      <translation>{new} statt {old}: {after} statt {before} kg/m auf {length} m.</translation>
+    </message>
+    <message>
+      <source>{section} stays: nothing lighter suffices.</source>
+      <translation>{section} bleibt: nichts Leichteres reicht aus.</translation>
+    </message>
+    <message>
       <source>{shown} of {total} lines</source>
       <translation>{shown} von {total} Trägerzügen</translation>
+    </message>
+    <message>
+      <source>{shown} of {total} sections</source>
+      <translation>{shown} von {total} Querschnitten</translation>
     </message>
     <message>
       <source>{side} of span {member} of {mark}: {how}</source>
@@ -1168,6 +1520,17 @@
     </message>
   </context>
   <context>
+    <name>Spanledger_Lightest</name>
+    <message>
+      <source>Find the lightest section that suffices, and see first what it does</source>
+      <translation>Den leichtesten ausreichenden Querschnitt suchen und vorher sehen, was er bewirkt</translation>
+    </message>
+    <message>
+      <source>Lightest section…</source>
+      <translation>Leichtester Querschnitt…</translation>
+    </message>
+  </context>
+  <context>
     <name>Spanledger_Open</name>
     <message>
       <source>Open IFC model…</source>
@@ -1198,6 +1561,28 @@
     <message>
       <source>Take the decision again that was undone last</source>
       <translation>Die zuletzt zurückgenommene Entscheidung wieder treffen</translation>
+    </message>
+  </context>
+  <context>
+    <name>Spanledger_Section</name>
+    <message>
+      <source>Give the chosen line or span another section or material</source>
+      <translation>Dem gewählten Trägerzug oder Feld einen anderen Querschnitt oder Baustoff geben</translation>
+    </message>
+    <message>
+      <source>Section and material…</source>
+      <translation>Querschnitt und Baustoff…</translation>
+    </message>
+  </context>
+  <context>
+    <name>Spanledger_Sheet</name>
+    <message>
+      <source>Calculation sheet…</source>
+      <translation>Berechnungsblatt…</translation>
+    </message>
+    <message>
+      <source>Write the calculation sheet, checks of the members included, as one HTML file</source>
+      <translation>Das Berechnungsblatt mit den Nachweisen der Stäbe als eine HTML-Datei schreiben</translation>
     </message>
   </context>
   <context>
