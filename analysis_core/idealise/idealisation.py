@@ -32,6 +32,7 @@ from analysis_core.idealise.self_weight import put_self_weight, weight_cases
 from analysis_core.idealise.standing_columns import let_columns_stand
 from analysis_core.idealise.temperature import put_temperature_actions
 from analysis_core.idealise.triangles import fault_triangles, let_lean, report_triangles
+from analysis_core.idealise.unloaded import report_unloaded
 from analysis_core.model import Action, Line, LineModel, Transfer
 from analysis_core.settings import Settings
 
@@ -108,6 +109,8 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
     used = [action.case for actions in placer.actions.values() for action in actions]
     used += [case for _, case in walls]
     cases = with_used(cases, used, settings, log)
+    own = {case.name for case in weight}
+    report_unloaded(building, settings, chooser, scheme.drafts, cases, set(used), own, log)
     told = {e for f in building.findings if f.slug == "oblique-bending" for e in f.elements}
     lines = _lines(scheme, placer.actions, table, settings, told, log)
     transfers = _transfers(scheme, lines)
