@@ -41,6 +41,13 @@ def weight_cases(building: Building, settings: Settings, log: Log) -> list[LoadC
         return stated
     if wanted or building.route == "physical":
         return [LoadCase(CASE_NAME, "permanent", self_weight=DOWN, source="default")]
+    if building.members:
+        log.add(
+            "note",
+            "self-weight-not-stated",
+            "No load case of the model states self weight, so none acts here unless the model's "
+            "actions hold it. The job file can add it (analysis: self_weight: true).",
+        )
     return []
 
 

@@ -135,6 +135,14 @@ def test_self_weight_of_the_model_can_be_switched_off():
     assert told(building, "self-weight-left-out", off).elements == ("c",)
 
 
+@pytest.mark.parametrize("wanted", [None, True])
+def test_an_analysis_model_without_self_weight_is_told_how_to_have_it(wanted):
+    found = idealise(simple(), Settings(analysis=Analysis(self_weight=wanted)))
+
+    assert ("self-weight-not-stated" in slugs(found)) == (wanted is None)
+    assert bool(only(found).actions) == (wanted is True)
+
+
 def test_a_member_without_shear_area_stays_rigid_in_shear():
     beam_only = member("B", FREE3, END)
     assert beam_only.section is not None
