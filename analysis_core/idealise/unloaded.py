@@ -57,9 +57,9 @@ def report_unloaded(
         log.add(
             "note" if others else "warning",
             "slab-weight-left-out",
-            f"{_slabs(len(bare))} ({listed(bare)}) without a permanent area load. Self weight is that "
-            f"of the analysed members alone; state the weight of slabs, and of what stands on "
-            f"them, in the job file (area_actions), unless actions on the beams hold it already.",
+            f"{_slabs(len(bare))} ({listed(bare)}) without a permanent area load. Self weight is "
+            f"that of the analysed members alone; state the weight of slabs, and of what stands "
+            f"on them, in the job file (area_actions), unless actions on the beams hold it.",
             bare,
         )
 
