@@ -137,3 +137,26 @@ def test_a_line_with_a_fault_is_refused_with_its_reason() -> None:
     with pytest.raises(ModelError, match="It has no material"):
         solve(faulty, ["q"])
     assert isinstance(solve_lines([faulty], ["q"])[0], ModelError)
+
+
+@pytest.mark.parametrize("made", [plain_line, beam_line], ids=["plain", "any"])
+@pytest.mark.parametrize("cases", [CASES[:1], CASES])
+def test_a_line_has_the_same_bits_alone_and_among_many(
+    made: Callable[[int], Line], cases: tuple[str, ...]
+) -> None:
+    """A reconciled revision, of which few lines are solved, must equal a full run."""
+    lines = [made(seed) for seed in range(7000, 7060)]
+    lines = [_recased(line, cases) for line in lines]
+    together = solve_lines([each for line in lines for each in [line] * 4], cases)
+    for line, found in zip(lines, together[::4], strict=True):
+        if isinstance(found, AnalysisError):
+            continue
+        (alone,) = solve_lines([line], cases)
+        assert not isinstance(alone, AnalysisError)
+        for name in ARRAYS:
+            np.testing.assert_array_equal(getattr(found, name), getattr(alone, name), name)
+
+
+def _recased(line: Line, cases: tuple[str, ...]) -> Line:
+    actions = tuple(replace(a, case=cases[i % len(cases)]) for i, a in enumerate(line.actions))
+    return replace(line, actions=actions)

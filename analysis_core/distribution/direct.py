@@ -43,16 +43,16 @@ def sweep(
     ``near``, ``far``, ``carried``, ``both`` (n): as in EndStiffness; ``held`` (n + 1): stiffness of
     supports against rotation; ``start``, ``end`` (n): fixed-end moments on the spans, clockwise;
     ``couples`` (n + 1): applied to the joints, clockwise.  Returns the moments at the starts and
-    ends of the spans and the rotations of the joints.
+    ends of the spans and the rotations of the joints.  Every sum is taken in the order of
+    ``sweep_lines``, so that a line has the same bits alone and among many.
     """
     count = len(near)
     unbalanced, give, stiff = [0.0] * count, [0.0] * count, [0.0] * count
     moments_start, moments_end = [0.0] * count, [0.0] * count
     turns = [0.0] * (count + 1)
-    beyond, moment = held[count], -couples[count]
+    beyond, moment = held[count], 0.0
     for j in range(count - 1, -1, -1):
-        moment += end[j]
-        unbalanced[j] = moment
+        unbalanced[j] = moment = end[j] + moment - couples[j + 1]
         total = far[j] + beyond
         if total > 0.0:
             give[j] = g = 1.0 / total
@@ -62,15 +62,14 @@ def sweep(
             stiff[j] = own = near[j]
             moments_start[j] = moment = start[j]
         beyond = held[j] + own
-        moment -= couples[j]
-    turn = -moment / beyond if beyond > 0.0 else 0.0
+    turn = (moment - couples[0]) * (-1.0 / beyond) if beyond > 0.0 else 0.0
     turns[0] = turn
     for j in range(count):
         moments_start[j] += stiff[j] * turn
         if j:
-            moments_end[j - 1] = couples[j] - moments_start[j] - held[j] * turn
+            moments_end[j - 1] = -moments_start[j] - held[j] * turn + couples[j]
         turns[j + 1] = turn = -(unbalanced[j] + carried[j] * turn) * give[j]
-    moments_end[count - 1] = couples[count] - held[count] * turn
+    moments_end[count - 1] = 0.0 - held[count] * turn + couples[count]
     return moments_start, moments_end, turns
 
 
