@@ -83,8 +83,16 @@ def test_a_deeper_section_is_named_with_both_depths(line):
     sentences = differences(of(line), after, {"B-0": "B2-AB"})
 
     assert len(sentences) == 1
-    assert sentences[0].startswith("section of B2-AB changed from R 300x500 500 deep")
-    assert "to R 300x600 600 deep" in sentences[0]
+    assert sentences[0].startswith("section of B2-AB changed from R 300x500 500 mm deep")
+    assert "to R 300x600 600 mm deep" in sentences[0]
+
+
+def test_a_longer_span_is_no_change_of_section(line):
+    joints = (*line.joints[:2], replace(line.joints[2], x=11.0))
+    longer = replace(line.members[1], pieces=(Piece(5.0, (1.03e8,)),))
+    after = of(replace(line, joints=joints, members=(line.members[0], longer)))
+
+    assert differences(of(line), after, {}) == ["geometry changed from 6 + 4.5 m to 6 + 5 m"]
 
 
 @pytest.mark.parametrize(

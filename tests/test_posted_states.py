@@ -108,7 +108,7 @@ def test_a_changed_section_makes_its_line_and_what_it_bears_on_stale_with_the_re
     assert set(stale) == {"J-1", "B1-AB", "B2-AB"}
     reasons = stale["J-1"].reasons
     assert any(
-        r.startswith("section of J-1 changed from") and r.endswith("to I 333 333 deep")
+        r.startswith("section of J-1 changed from") and r.endswith("to I 333 333 mm deep")
         for r in reasons
     )
     mark = next(r for r in stale["B1-AB"].reasons)

@@ -189,7 +189,7 @@ def test_the_command_tells_writes_and_posts(tmp_path, capsys):
 
     out, _ = capsys.readouterr()
     assert status == 0
-    assert "section of B2-AB changed from R 300x500 500 deep" in out
+    assert "section of B2-AB changed from R 300x500 500 mm deep" in out
     data = json.loads((tmp_path / "c.json").read_text(encoding="utf-8"))
     assert data["format"] == "spanledger-changes"
     assert sum(c["state"] == "changed" for c in data["changes"]) == 3

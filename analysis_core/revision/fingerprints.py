@@ -192,12 +192,13 @@ def _geometry(line: Line) -> str:
 
 def _section(member: Member) -> str:
     section = member.section
-    pieces = [[_nine(p.length), [_nine(c) for c in p.flexural], _nine(p.power),
+    whole = member.length  # shares of it: how long a member is belongs to the geometry
+    pieces = [[_nine(p.length / whole), [_nine(c) for c in p.flexural], _nine(p.power),
                [_nine(c) for c in p.shear or ()]] for p in member.pieces]  # fmt: skip
     if section is None:
         return f"EI {member.flexural_rigidity:.4g} N·m² #{_digest(pieces)}"
-    size = f" {1e3 * section.depth:.0f} deep" if section.depth else ""
-    return f"{section.name}{size} #{_digest([pieces, _nine(section.area)])}"
+    size = f"{1e3 * section.depth:.0f} mm deep" if section.depth else ""
+    return f"{f'{section.name} {size}'.strip()} #{_digest([pieces, _nine(section.area)])}"
 
 
 def _material(material: Material | None) -> str:
