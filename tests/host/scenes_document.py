@@ -21,7 +21,7 @@ def keep():
     doc = FreeCAD.newDocument("Kept")
     obj = document.add_beam_lines(doc)
     outcome = demo.outcome()
-    scene = document.show_outcome(obj, outcome, ["balanced", "stale"])
+    scene, _supports = document.show_outcome(obj, outcome, ["balanced", "stale"])
     ordinates = ordinates_of(outcome.lines, View("envelope", "strength"), "moment")
     document.show_diagram(obj, scene, ordinates)
     path = os.path.join(os.environ["SPANLEDGER_PICTURES"], "kept.FCStd")

@@ -84,16 +84,35 @@ def find_beam_lines(document: Any) -> Any | None:
     return None
 
 
-def show_outcome(obj: Any, outcome: Any, states: list[str]) -> Scene:
-    """Write the lines of a run into the object; the diagram is emptied."""
+Drawn = tuple[Scene, Supports]
+
+
+def drawn_of(outcome: Any) -> Drawn:
+    """Return what is drawn of the lines of a run."""
     scene = scene_of(outcome.model.lines)
-    supports = supports_of(outcome.model.lines, scene.origin)
+    return scene, supports_of(outcome.model.lines, scene.origin)
+
+
+def show_outcome(obj: Any, outcome: Any, states: list[str], before: Drawn | None = None) -> Drawn:
+    """Write the lines of a run into the object, and return what is drawn of them.
+
+    Where that is what was drawn ``before``, it stays; otherwise the diagram is emptied.
+    """
+    scene, supports = drawn_of(outcome)
     obj.Schema = outcome.schema
-    obj.Origin = FreeCAD.Vector(*scene.origin)
     obj.Fingerprint = outcome.fingerprint
-    obj.Marks = list(scene.marks)
     obj.Storeys = [line.storey or "" for line in outcome.model.lines]
     obj.States = states
+    obj.Label = outcome.file
+    if before is not None and scene.drawn_like(before[0]) and supports.drawn_like(before[1]):
+        return before
+    _write_lines(obj, scene, supports)
+    return scene, supports
+
+
+def _write_lines(obj: Any, scene: Scene, supports: Supports) -> None:
+    obj.Origin = FreeCAD.Vector(*scene.origin)
+    obj.Marks = list(scene.marks)
     obj.Ends = _vectors(scene.ends.reshape(-1, 3))
     obj.Down = _vectors(scene.down)
     obj.MemberLine = scene.line_index.tolist()
@@ -102,9 +121,7 @@ def show_outcome(obj: Any, outcome: Any, states: list[str]) -> Scene:
     stiffness = np.where(np.isinf(supports.stiffness), -1.0, supports.stiffness)
     obj.SupportStiffness = stiffness.ravel().tolist()  # a saved document knows no infinity
     obj.Stations, obj.Upper, obj.Lower, obj.Shown = 0, [], [], ""
-    obj.Label = outcome.file
     obj.LinesDrawn += 1
-    return scene
 
 
 def show_diagram(obj: Any, scene: Scene, ordinates: Ordinates) -> None:

@@ -197,6 +197,15 @@ class OpenedModel:
         }
         return found
 
+    def known_checks(self, outcome: Outcome, settings: Settings) -> dict[str, Checks]:
+        """Return the checks of the lines that did not change since they were checked."""
+        said = _said_of_checks(settings)
+        return {
+            result.line.mark: self._checked[result.fingerprint, said]
+            for result in outcome.lines
+            if (result.fingerprint, said) in self._checked
+        }
+
     def building(self, progress: Callable[[str, float], None]) -> BuildingShape:
         """Return the bodies of the building; may be called in another thread."""
         from analysis_core.ifc.shapes import building_shape

@@ -306,9 +306,12 @@ class Desk(QtCore.QObject):
             if self.opened_models.get(name) is not opened:
                 return  # the document was closed meanwhile
             opened.receive(outcome)
+            opened.checks = opened.known_checks(outcome, settings)
             self._show_all(name)
             self._watch()
             self._tell_what_moved(opened, title)
+            self.panels.lay_out()
+            self.picture.redraw(name)
             self._look_closer(name, outcome, settings)
 
         self.runs.start(task, done)
@@ -328,7 +331,7 @@ class Desk(QtCore.QObject):
             self.picture.show_building(name, opened)
             self._show_states(name)
             if self.opened is opened and self.line is not None:
-                self.panels.show_spot(opened, self.line, self.spot)
+                self.panels.show_checks(opened, self.line, self.spot)
 
         self.runs.start_behind(task, done)
 
@@ -341,17 +344,18 @@ class Desk(QtCore.QObject):
         count = len(opened.outcome.lines)
         if self.line is None or self.line >= count:
             self.line = 0 if count else None
-        self._shade()
+        self._shade(rows)
         self.choose_line(self.line)
         self.picture.show_building(name, opened)
 
-    def _shade(self) -> None:
+    def _shade(self, rows: list[Row] | None = None) -> None:
         """Tell the lines of the active model apart in the 3D view as is asked for."""
         way = self.panels.strip.shaded_by.currentData()
         self.panels.strip.legend.show_shades(shades(way))
         opened = self.solved
         if opened is not None:
-            numbers = shade_numbers(way, self._rows(opened), opened.outcome, opened.previous)
+            rows = rows or self._rows(opened)
+            numbers = shade_numbers(way, rows, opened.outcome, opened.previous)
             self.picture.shade(FreeCAD.ActiveDocument.Name, way, numbers)
 
     def _show_view(self) -> None:
@@ -378,7 +382,7 @@ class Desk(QtCore.QObject):
         self.picture.show_states(name, [row.state for row in rows])
         if FreeCAD.ActiveDocument is not None and FreeCAD.ActiveDocument.Name == name:
             self.panels.list.show_rows(rows, self.opened_models[name].units)
-            self._shade()
+            self._shade(rows)
 
     def _rows(self, opened: OpenedModel) -> list[Row]:
         return rows_of(

@@ -102,7 +102,8 @@ class Inspector(QtWidgets.QScrollArea):
         number = part.span if part.span is not None else part.id
         self._begin(title.format(number=number, mark=result.line.mark))
         self._facts(member_facts(result, member, dict(outcome.model.names), units))
-        self._facts(deflection_facts(result, member, units) + check_facts(checks, member))
+        self._checked = self._facts([])
+        self.show_checks(result, member, checks, units)
         for at_end, spring in ((False, part.start_spring), (True, part.end_spring)):
             where = decisions.end_of(result.line, member, at_end=at_end)
             if where is not None:
@@ -113,6 +114,14 @@ class Inspector(QtWidgets.QScrollArea):
             self._action_form(result.line.mark, part.element, outcome, units)
             self._section_form(result.line.mark, part, units)
         self._layout.addStretch(1)
+
+    def show_checks(
+        self, result: LineResult, member: int, checks: Sequence[MemberChecks], units: DisplayUnits
+    ) -> None:
+        """Show the checks of the span that is shown, which come later than its other facts."""
+        if self._checked is not None:
+            facts = deflection_facts(result, member, units) + check_facts(checks, member)
+            self._checked.setText(facts_text(facts))
 
     def show_action(
         self, result: LineResult, number: int, words: str, text: str, units: DisplayUnits
@@ -431,6 +440,7 @@ class Inspector(QtWidgets.QScrollArea):
     # Parts.
     def _begin(self, title: str) -> None:
         body = QtWidgets.QWidget()
+        self._checked = None
         self._layout = QtWidgets.QVBoxLayout(body)
         self._layout.setContentsMargins(6, 2, 6, 6)
         if title:
@@ -451,10 +461,11 @@ class Inspector(QtWidgets.QScrollArea):
             body.hide()
             body.deleteLater()
 
-    def _facts(self, facts: list[tuple[str, str]]) -> None:
+    def _facts(self, facts: list[tuple[str, str]]) -> Any:
         label = facts_label("SpanledgerFacts")
         label.setText(facts_text(facts))
         self._layout.addWidget(label)
+        return label
 
     def _form(self, title: str) -> Any:
         box = QtWidgets.QGroupBox(title)

@@ -24,19 +24,26 @@ class LineModel(QtCore.QAbstractItemModel):
         self._column, self._descending = 0, False
 
     def set_rows(self, rows: list[Row], units: DisplayUnits) -> None:
-        """Show these lines."""
-        self._rows, self._units = rows, units
-        self._regroup()
+        """Show these lines; where they stand where they stood, only those that differ change."""
+        if units != self._units:
+            self._units = units
+            self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(COLUMNS) - 1)
+        self._rows = rows
+        groups = self._grouped()
+        if _places(groups) == _places(self._groups):
+            self._replace(groups)
+        else:
+            self._reset(groups)
 
     def filter(self, words: str, states: Sequence[str]) -> None:
         """Show only lines with these words, in these states."""
         self._words, self._states = words, tuple(states)
-        self._regroup()
+        self._reset(self._grouped())
 
     def sort(self, column: int, order: Any = Qt.SortOrder.AscendingOrder) -> None:
         """Sort within each storey; called by the view's header."""
         self._column, self._descending = column, order == Qt.SortOrder.DescendingOrder
-        self._regroup()
+        self._reset(self._grouped())
 
     def line_at(self, index: Any) -> int | None:
         """Return the number of the line at an index, None for a storey."""
@@ -102,13 +109,32 @@ class LineModel(QtCore.QAbstractItemModel):
         unit = f"\n{self._units.symbol(quantity)}" if self._units and quantity else ""
         return tr(COLUMNS[section]) + unit
 
-    def _regroup(self) -> None:
-        self.beginResetModel()
-        self._groups = grouped(
+    def _grouped(self) -> list[Group]:
+        return grouped(
             self._rows, words=self._words, states=self._states, column=self._column,
             descending=self._descending,
         )  # fmt: skip
+
+    def _reset(self, groups: list[Group]) -> None:
+        self.beginResetModel()
+        self._groups = groups
         self.endResetModel()
+
+    def _replace(self, groups: list[Group]) -> None:
+        """Take other rows in the same places."""
+        before, self._groups = self._groups, groups
+        last = len(COLUMNS) - 1
+        for number, (old, new) in enumerate(zip(before, groups, strict=True), start=1):
+            for row, (was, now) in enumerate(zip(old.rows, new.rows, strict=True)):
+                if was != now:
+                    self.dataChanged.emit(
+                        self.createIndex(row, 0, number), self.createIndex(row, last, number)
+                    )
+
+
+def _places(groups: list[Group]) -> list[tuple[str, list[int]]]:
+    """Which lines stand where."""
+    return [(group.storey, [row.index for row in group.rows]) for group in groups]
 
 
 class LineList(QtWidgets.QWidget):
@@ -163,10 +189,12 @@ class LineList(QtWidgets.QWidget):
         """Show these lines."""
         if rows == self._shown and units == self._units:
             return
+        widest = _widest(self._shown) if units == self._units else ()
         self._shown, self._units = rows, units
         self.model.set_rows(rows, units)
-        for column in range(len(COLUMNS)):
-            self.tree.resizeColumnToContents(column)
+        for column, length in enumerate(_widest(rows)):
+            if not widest or length > widest[column]:
+                self.tree.resizeColumnToContents(column)
 
     def choose(self, line: int | None) -> None:
         """Show a line as chosen, without telling anybody."""
@@ -193,3 +221,9 @@ class LineList(QtWidgets.QWidget):
         self.count.setText(text.format(shown=self.model.shown(), total=len(self._shown)))
         if self._line is not None:
             self.choose(self._line)
+
+
+def _widest(rows: Sequence[Row]) -> tuple[int, ...]:
+    """How many characters the longest text of each column has."""
+    texts = [row.texts for row in rows]
+    return tuple(max(map(len, column)) for column in zip(*texts, strict=True))

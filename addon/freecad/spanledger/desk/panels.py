@@ -15,7 +15,7 @@ from ..present.findings import finding_rows
 from ..present.listing import Row
 from ..present.load_path import bearing_rows, paths_at_joint, paths_on_member
 from ..present.strip import strip_of
-from ..qt import Qt, QtWidgets
+from ..qt import Qt, QtCore, QtWidgets
 from ..texts import translate
 from .bearings_list import BearingsList
 from .changes_list import ChangesList
@@ -115,7 +115,10 @@ class Panels:
         if view is None:
             return
         result = opened.outcome.lines[line]
-        strip = strip_of(result, view, opened.units, before=_before(opened, result.line.mark))
+        strip = strip_of(
+            result, view, opened.units, before=_before(opened, result.line.mark),
+            redistributed=bool(opened.settings.rules.redistribution),
+        )  # fmt: skip
         self.strip.show_strip(strip, opened.units, spot)
         self.show_spot(opened, line, spot)
         self.show_record(opened, line)
@@ -157,6 +160,22 @@ class Panels:
             inspector.show_action(result, number, words, opened.text, units)
         else:
             inspector.show_line(result, outcome, opened.settings, units)
+
+    def show_checks(self, opened: OpenedModel, line: int, spot: Spot | None) -> None:
+        """Show the checks of the span in the inspector; what is being typed there stays."""
+        if spot is not None and spot[0] == "member":
+            result = opened.outcome.lines[line]
+            checks = opened.checks.get(result.line.mark, ())
+            self.strip.inspector.show_checks(result, spot[1], checks, opened.units)
+
+    @staticmethod
+    def lay_out() -> None:
+        """Lay out now what has changed.
+
+        Left to themselves, layouts do so level by level, and the window is painted in between:
+        with a 3D view in it, each time costs as much as a frame of that view.
+        """
+        QtCore.QCoreApplication.sendPostedEvents(None, QtCore.QEvent.Type.LayoutRequest)
 
     def clear(self) -> None:
         """Show no model."""

@@ -10,7 +10,7 @@ import FreeCADGui
 from .. import document
 from ..opened_model import OpenedModel
 from ..present.diagrams import View, ordinates_of
-from ..present.scene import Scene, drawn_stations
+from ..present.scene import drawn_stations
 from ..present.shades import shades
 from ..qt import QtCore
 from ..texts import translate
@@ -21,7 +21,7 @@ class Picture:
 
     def __init__(self) -> None:
         self.building_shown = True
-        self._scenes: dict[str, Scene] = {}
+        self._drawn: dict[str, document.Drawn] = {}
         self._shapes: dict[str, Any] = {}  # a building as large as a town is not sent twice
 
     def show(self, name: str, opened: OpenedModel, states: list[str]) -> None:
@@ -29,13 +29,14 @@ class Picture:
         doc = FreeCAD.getDocument(name)
         obj = document.find_beam_lines(doc)
         if obj is not None:
-            self._scenes[name] = document.show_outcome(obj, opened.outcome, states)
+            before = self._drawn.get(name)
+            self._drawn[name] = document.show_outcome(obj, opened.outcome, states, before)
             return
         self._shapes.pop(name, None)
         doc.openTransaction(translate("Spanledger", "Beam lines"))
         try:
             obj = _add_object(doc, opened)
-            self._scenes[name] = document.show_outcome(obj, opened.outcome, states)
+            self._drawn[name] = document.show_outcome(obj, opened.outcome, states)
         except Exception:
             doc.abortTransaction()
             raise
@@ -45,8 +46,8 @@ class Picture:
     def show_diagram(self, name: str, opened: OpenedModel, view: View, quantity: str) -> None:
         """Draw a quantity along all lines."""
         obj = document.find_beam_lines(FreeCAD.getDocument(name))
-        if obj is not None and name in self._scenes:
-            scene = self._scenes[name]
+        if obj is not None and name in self._drawn:
+            scene, _supports = self._drawn[name]
             stations = drawn_stations(len(scene.ends))
             ordinates = ordinates_of(opened.outcome.lines, view, quantity, stations)
             document.show_diagram(obj, scene, ordinates)
@@ -71,9 +72,16 @@ class Picture:
             self._shapes[name] = shape
             obj.ViewObject.Proxy.show_building(shape)
 
+    def redraw(self, name: str) -> None:
+        """Let the 3D view be painted together with the docks, and not a moment later."""
+        gui = FreeCADGui.getDocument(name)
+        view = gui.activeView() if gui else None
+        if view is not None and hasattr(view, "redraw"):
+            view.redraw()
+
     def forget(self, name: str) -> None:
         """A document was closed."""
-        self._scenes.pop(name, None)
+        self._drawn.pop(name, None)
         self._shapes.pop(name, None)
 
 

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 from typing import Any
 
-from ..qt import Qt, QtWidgets, Signal
+from ..qt import Qt, QtCore, QtWidgets, Signal
 from ..texts import tr, translate
+
+PATIENCE_MS = 300
 
 
 class RunningBar(QtWidgets.QWidget):
@@ -33,22 +35,30 @@ class RunningBar(QtWidgets.QWidget):
         layout.setContentsMargins(6, 2, 6, 4)
         layout.addWidget(self.message)
         layout.addLayout(row)
+        self._waiting = QtCore.QTimer(self)
+        self._waiting.setSingleShot(True)
+        self._waiting.setInterval(PATIENCE_MS)
+        self._waiting.timeout.connect(self._appear)
         self.end()
 
     def begin(self) -> None:
-        """Show that work began."""
-        self.message.setText("")
+        """Work began; what is over within PATIENCE_MS is shown by its result alone.
+
+        Most edits are.  A bar that comes and goes would make the docks lay themselves out, and
+        paint the window, twice over.
+        """
+        self._waiting.start()
         self.bar.setValue(0)
-        self.bar.show()
-        self.stop.show()
 
     def show_progress(self, step: str, part: float) -> None:
         """Show how far it is."""
-        self.bar.setFormat(f"{tr(step)} %p %")
-        self.bar.setValue(round(100.0 * part))
+        if not self.bar.isHidden():
+            self.bar.setFormat(f"{tr(step)} %p %")
+            self.bar.setValue(round(100.0 * part))
 
     def end(self) -> None:
         """Show that nothing runs."""
+        self._waiting.stop()
         self.bar.hide()
         self.stop.hide()
 
@@ -61,3 +71,8 @@ class RunningBar(QtWidgets.QWidget):
         """Show no sentence."""
         self.message.setText("")
         self.message.setToolTip("")
+
+    def _appear(self) -> None:
+        self.clear()
+        self.bar.show()
+        self.stop.show()

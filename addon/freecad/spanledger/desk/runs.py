@@ -14,6 +14,8 @@ from ..texts import translate
 from ..worker import Work
 from .running import RunningBar
 
+PAUSE_MS = 120
+
 
 class Runs(QtCore.QObject):
     """At most one work in front, with progress and a button to stop it."""
@@ -24,6 +26,10 @@ class Runs(QtCore.QObject):
         self._collector = CollectorPause()
         self._front: Work | None = None
         self._behind: Work | None = None
+        self._pause = QtCore.QTimer(self)
+        self._pause.setSingleShot(True)
+        self._pause.setInterval(PAUSE_MS)
+        self._pause.timeout.connect(self._start_waiting)
         bar.cancel_asked.connect(self.cancel)
 
     @property
@@ -54,13 +60,17 @@ class Runs(QtCore.QObject):
         self._start(work)
 
     def start_behind(self, task: Callable[..., Any], done: Callable[[Any], None]) -> None:
-        """Run something that nobody waits for; a failure is only logged."""
+        """Run something that nobody waits for; a failure is only logged.
+
+        It begins a moment later: the picture of what came before is to be painted first, and
+        Python lets one thread work at a time.
+        """
         self.cancel_behind()
         work = Work(task, self)
         work.succeeded.connect(lambda result: guarded(lambda: done(result)))
         work.failed.connect(lambda message: FreeCAD.Console.PrintLog(message + "\n"))
         self._behind = work
-        self._start(work)
+        self._pause.start()
 
     def cancel(self) -> None:
         """Stop what runs in front at its next step."""
@@ -69,8 +79,18 @@ class Runs(QtCore.QObject):
 
     def cancel_behind(self) -> None:
         """Stop what runs behind at its next step."""
-        if self._behind is not None:
+        if self._behind is None:
+            return
+        if self._pause.isActive():
+            self._pause.stop()
+            self._behind.deleteLater()
+            self._behind = None
+        else:
             self._behind.cancel()
+
+    def _start_waiting(self) -> None:
+        if self._behind is not None:
+            self._start(self._behind)
 
     def _start(self, work: Work) -> None:
         work.finished.connect(lambda: self._ended(work))

@@ -19,6 +19,7 @@ class SelectionLink:
         self.desk = desk
         self._watching = False
         self._busy = False
+        self._marked: tuple[Any, ...] = ()
 
     def start(self) -> None:
         """Begin to watch."""
@@ -28,6 +29,7 @@ class SelectionLink:
 
     def stop(self) -> None:
         """Watch no longer."""
+        self._changed()
         if self._watching:
             FreeCADGui.Selection.removeObserver(self)
             self._watching = False
@@ -39,16 +41,11 @@ class SelectionLink:
             return
         view = obj.ViewObject.Proxy
         view.choose(line)
-        self._busy = True
-        try:
-            FreeCADGui.Selection.clearSelection()
-            if line is not None:
-                for member in view.members_of(line):
-                    FreeCADGui.Selection.addSelection(
-                        obj.Document.Name, obj.Name, f"Member{member}"
-                    )
-        finally:
-            self._busy = False
+        members = [] if line is None else view.members_of(line).tolist()
+        marked = obj.Document.Name, obj.Name, members
+        if marked != self._marked:
+            self._select(obj, members)
+            self._marked = marked
 
     def look_at(self, line: int, elements: tuple[str, ...]) -> None:
         """Select the members meant, the whole line where none is named, and look at them."""
@@ -57,13 +54,7 @@ class SelectionLink:
             return
         members = obj.ViewObject.Proxy.members_of(line)
         meant = [m for m in members if obj.Elements[m] in elements] or list(members)
-        self._busy = True
-        try:
-            FreeCADGui.Selection.clearSelection()
-            for member in meant:
-                FreeCADGui.Selection.addSelection(obj.Document.Name, obj.Name, f"Member{member}")
-        finally:
-            self._busy = False
+        self._select(obj, meant)
         obj.ViewObject.Proxy.look_at(FreeCADGui.ActiveDocument.ActiveView, meant)
 
     def addSelection(self, doc: str, name: str, part: str, _point: Any) -> None:  # noqa: N802
@@ -72,12 +63,39 @@ class SelectionLink:
         It tells so in the midst of going through the scene for a click; nodes may change only
         once it is out of there.
         """
+        self._changed()
         if self._busy or not part.startswith("Member"):
             return
         obj = FreeCAD.getDocument(doc).getObject(name)
         if obj is document.find_beam_lines(FreeCAD.getDocument(doc)):
             line = obj.MemberLine[int(part.removeprefix("Member"))]
             QtCore.QTimer.singleShot(0, lambda: guarded(lambda: self._follow(doc, name, line)))
+
+    def removeSelection(self, *_what: Any) -> None:  # noqa: N802
+        """FreeCAD tells that something is selected no longer."""
+        self._changed()
+
+    def clearSelection(self, *_what: Any) -> None:  # noqa: N802
+        """FreeCAD tells that nothing is selected any more."""
+        self._changed()
+
+    def setSelection(self, *_what: Any) -> None:  # noqa: N802
+        """FreeCAD tells that other things were selected."""
+        self._changed()
+
+    def _changed(self) -> None:
+        """What is selected is no longer what was selected here."""
+        self._marked = ()
+
+    def _select(self, obj: Any, members: list[int]) -> None:
+        """Select these members and nothing else."""
+        self._busy = True
+        try:
+            FreeCADGui.Selection.clearSelection()
+            for member in members:
+                FreeCADGui.Selection.addSelection(obj.Document.Name, obj.Name, f"Member{member}")
+        finally:
+            self._busy = False
 
     def _follow(self, doc: str, name: str, line: int) -> None:
         """Show the line that was selected in the 3D view."""

@@ -81,11 +81,16 @@ class Faces:
             self._outline,
         ):  # fmt: skip
             self.node.addChild(node)
+        self._colour: Colour | None = None
+        self._count = -1
         self.set_colour(colour)
         self.clear()
 
     def set_colour(self, colour: Colour) -> None:
         """Show faces and outline in another colour."""
+        if colour == self._colour:
+            return
+        self._colour = colour
         self._material.diffuseColor = colour
         self._base.diffuseColor = colour
 
@@ -93,6 +98,9 @@ class Faces:
         """Draw the quadrilaterals and the outline of a diagram."""
         count = len(drawn.corners)
         _set_points(self._points, drawn.corners.reshape(-1, 3))
+        if count == self._count:
+            return  # which corners belong together follows from their number alone
+        self._count = count
         first = 4 * np.arange(count, dtype=np.int32)[:, None]
         # Two triangles each, and the side that is the curve.
         _set_index(self._faces.coordIndex, (first + _TRIANGLES).reshape(-1, 3))

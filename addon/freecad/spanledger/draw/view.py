@@ -38,6 +38,9 @@ class BeamLinesView:
         """Build the nodes once; FreeCAD calls it on creation and on reopening."""
         self.scene: Scene | None = None
         self.chosen_line: int | None = None
+        # What was drawn last, with the scene that it was drawn of.
+        self._shaded_as: tuple[Any, ...] = ()
+        self._chosen_as: tuple[Any, ...] = ()
         palette = VIEW
         self.lines = Lines(palette.parts("line"), 2.5, casing=palette.parts("ground"))
         self.supports = Lines(
@@ -103,6 +106,10 @@ class BeamLinesView:
 
     def shade(self, classes: tuple[Shade, ...], numbers: list[int]) -> None:
         """Draw the lines of each class in its own colour and stroke, over the plain ones."""
+        wanted = classes, numbers, self.scene
+        if self._shaded_as == wanted:
+            return
+        self._shaded_as = wanted
         self.shaded.removeAllChildren()
         if len(classes) < 2 or len(numbers) <= int(self.scene.line_index.max(initial=-1)):
             return
@@ -117,7 +124,10 @@ class BeamLinesView:
 
     def choose(self, line: int | None, labels: list[tuple[Any, str]] | None = None) -> None:
         """Mark one line, with texts at points; None marks nothing."""
-        self.chosen_line = line
+        wanted = line, labels, self.scene
+        if wanted == self._chosen_as:
+            return
+        self._chosen_as, self.chosen_line = wanted, line
         which = np.zeros(0, dtype=int) if line is None else self.members_of(line)
         self.chosen.set_segments(self.scene.ends[which])
         self.labels.set(labels or [])

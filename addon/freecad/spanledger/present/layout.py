@@ -209,7 +209,7 @@ def _band(
     if curve.before is not None:
         for values in curve.before:
             for run in _runs(drawing, curve.x, values, base, scale):
-                drawing.strokes.append(Stroke(run, "before", 1.3, dashed=True))
+                drawing.strokes.append(Stroke(run, "before", 1.0, dashed=True))
     _curve(drawing, curve, base, scale)
     if curve.redistributed is not None:
         for values in curve.redistributed:

@@ -43,6 +43,15 @@ class Scene:
     marks: tuple[str, ...]
     origin: tuple[float, float, float] = (0.0, 0.0, 0.0)
 
+    def drawn_like(self, other: Scene) -> bool:
+        """Whether both show the same members in the same places."""
+        return (
+            (self.marks, self.elements, self.origin) == (other.marks, other.elements, other.origin)
+            and np.array_equal(self.ends, other.ends)
+            and np.array_equal(self.down, other.down)
+            and np.array_equal(self.line_index, other.line_index)
+        )
+
 
 def scene_of(lines: Sequence[Line]) -> Scene:
     """Return the members of all lines as arrays."""
@@ -94,6 +103,14 @@ class Supports:
     at: Floats
     right: Floats
     stiffness: Floats
+
+    def drawn_like(self, other: Supports) -> bool:
+        """Whether both show the same symbols in the same places."""
+        return (
+            np.array_equal(self.at, other.at)
+            and np.array_equal(self.right, other.right)
+            and np.array_equal(self.stiffness, other.stiffness)
+        )
 
 
 def supports_of(lines: Sequence[Line], origin: Point = (0.0, 0.0, 0.0)) -> Supports:

@@ -30,6 +30,7 @@ Floats = NDArray[np.float64]
 QUANTITIES: tuple[Quantity, ...] = ("moment", "shear", "deflection")
 UNIT_OF: Mapping[str, str] = {"moment": "moment", "shear": "force", "deflection": "deflection"}
 CURVE_POINTS = 161
+SEEN = 1e-3  # of the largest ordinate: less than a pixel in the height of a curve
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,11 +77,14 @@ def strip_of(
     units: DisplayUnits,
     *,
     before: LineResult | None = None,
+    redistributed: bool = True,
 ) -> Strip:
     """Return what is to be drawn of a line.
 
     An envelope shows all actions, a combination those of its cases with their factors.
-    ``before`` is the same line in the run before, whose curves are drawn beside.
+    ``before`` is the same line in the run before, whose curves are drawn beside.  What is left of
+    the moments after redistribution is part of a line's details, which take as long to make as
+    all else here; ``redistributed`` tells whether any line has it.
     """
     line = result.line
     stretches = stretches_of(line)
@@ -91,7 +95,7 @@ def strip_of(
         for quantity in QUANTITIES:
             curve = _curve(envelope, stretches, quantity, units)
             curves[quantity] = _with_before(curve, old, before.line if before else None)
-        if (after := _redistributed(result, view)) is not None:
+        if redistributed and (after := _redistributed(result, view)) is not None:
             for quantity in ("moment", "shear"):
                 pair = _joined(after, stretches, quantity)
                 curves[quantity] = replace(curves[quantity], redistributed=pair)
@@ -249,10 +253,18 @@ def _with_before(curve: Curve, before: LineEnvelope | None, line: Line | None) -
     low, high = _joined(before, stretches_of(line), curve.quantity)
     if low.shape != curve.x.shape:
         return curve
-    same = np.allclose(low, curve.lower, equal_nan=True) and np.allclose(
-        high, curve.upper, equal_nan=True
-    )
-    return curve if same else replace(curve, before=(low, high))
+    seen = SEEN * float(np.nanmax(np.abs([low, high, curve.lower, curve.upper])))
+    moved = [_where_moved(low, curve.lower, seen), _where_moved(high, curve.upper, seen)]
+    return replace(curve, before=(low, high)) if any(moved) else curve
+
+
+def _where_moved(old: Floats, now: Floats, seen: float) -> bool:
+    """Empty the stretches of ``old`` that nobody could tell from ``now``; tell if any is left."""
+    by_stretch = old.reshape(-1, CURVE_POINTS + 1)
+    gap = np.abs(by_stretch - now.reshape(by_stretch.shape))[:, :-1]
+    same = gap.max(axis=1) <= seen
+    by_stretch[same] = np.nan
+    return not same.all()
 
 
 __all__ = [
