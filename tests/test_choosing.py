@@ -142,3 +142,13 @@ def test_a_line_that_nothing_suits_is_said_so(tmp_path, capsys):
     (choice,), _ = pipeline.lightest(MODEL, str(small), strict, marks=["FF-04"])
     assert choice.chosen == ""
     assert not any(t.suits for t in choice.tried)
+
+
+def test_what_has_no_code_is_not_chosen_though_nothing_speaks_against_it(tmp_path):
+    path = tmp_path / "aluminium.ifc"
+    path.write_text(
+        MODEL.read_text(encoding="utf-8").replace("Steel S355", "Aluminium 6082"), encoding="utf-8"
+    )
+    (choice,), _ = pipeline.lightest(path, "model", load(JOB), marks=["FF-04"])
+    assert choice.chosen == ""
+    assert {t.reason.partition(":")[0] for t in choice.tried} == {"not checked"}

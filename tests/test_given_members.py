@@ -125,6 +125,8 @@ def test_the_command_writes_members_on_request_alone(tmp_path, capsys):
     assert main(common) == 0
     plain = pipeline.run(tmp_path / "out.ifc", parse(JOB))
     assert line_of(plain, "J-1").line.members[0].section.name == "IPE 300"
+    written = (tmp_path / "out.ifc").read_text(encoding="utf-8")
+    assert written.count("the section ''I 410'' that the job file gives") == 1  # its own line
 
     assert main([*common, "--members", "--json", str(data)]) == 0
     capsys.readouterr()
@@ -134,6 +136,7 @@ def test_the_command_writes_members_on_request_alone(tmp_path, capsys):
     }
     plain = pipeline.run(tmp_path / "out.ifc", parse(JOB))
     assert line_of(plain, "J-1").line.members[0].section.name == "I 410"
+    assert "the job file gives" not in (tmp_path / "out.ifc").read_text(encoding="utf-8")
     assert changes == [
         {"element": c.element, "name": c.name, "what": c.what, "before": c.old, "after": c.new}
         for c in pipeline.member_changes(model(), load(job))

@@ -157,7 +157,7 @@ class _Search:
         assert material is not None  # else it would be unfit
         others: list[Candidate] = []
         if strict:
-            candidates, others = made_of(candidates, material.category)
+            candidates, others = made_of(candidates, material)
         tried = self._tried(self._in_order(candidates), material.density)
         kept = replace(self._kept, tried=tried, left_out=tuple(c.name for c in others))
         if not tried or not tried[-1].suits:

@@ -16,7 +16,7 @@ from analysis_core.errors import JobError
 from analysis_core.findings import Finding, listed
 from analysis_core.ifc.materials.table import kind_of
 from analysis_core.ifc.updating.stock import Stock, Stocked, alike
-from analysis_core.model import Section
+from analysis_core.model import Material, Section
 from analysis_core.settings import Settings, TableSection
 
 MODEL, JOB = "model", "job"
@@ -45,8 +45,7 @@ class Candidate:
     @property
     def kind(self) -> str:
         """What name and categories say that it is made of: "steel", "timber", …, or ""."""
-        told = kind_of(" ".join((*self.categories, self.name)))
-        return _KINDS.get(told, told)
+        return _kind(" ".join((*self.categories, self.name)))
 
 
 @dataclass(frozen=True, slots=True)
@@ -109,18 +108,24 @@ def only(candidates: Iterable[Candidate], patterns: Sequence[str]) -> list[Candi
 
 
 def made_of(
-    candidates: Iterable[Candidate], material: str
+    candidates: Iterable[Candidate], material: Material
 ) -> tuple[list[Candidate], list[Candidate]]:
-    """Return what can be made of a category of material, and what cannot.
+    """Return what can be made of a material, and what cannot.
 
     What says nothing of its material is judged by its shape: beams of steel are not solid
     rectangles, those of concrete and timber no hollow sections.
     """
     fitting: list[Candidate] = []
     others: list[Candidate] = []
+    kind = material.category or _kind(material.name)
     for candidate in candidates:
-        (fitting if _can_be_of(candidate, material) else others).append(candidate)
+        (fitting if _can_be_of(candidate, kind) else others).append(candidate)
     return fitting, others
+
+
+def _kind(text: str) -> str:
+    told = kind_of(text)
+    return _KINDS.get(told, told)
 
 
 def _can_be_of(candidate: Candidate, material: str) -> bool:

@@ -206,6 +206,7 @@ def lightest():
     click(find)
     wait_for_run(desk, "the search")
     found["summary"] = child(box, QtWidgets.QLabel, "SpanledgerLightestSummary").text()
+    assert box.candidates.topLevelItemCount(), box.message.text()
     tree = child(box, QtWidgets.QTreeWidget, "SpanledgerCandidates")
     found["candidates"] = [
         [tree.topLevelItem(i).text(c) for c in range(7)] for i in range(tree.topLevelItemCount())

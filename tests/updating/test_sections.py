@@ -388,3 +388,20 @@ def test_profiles_of_one_name_and_different_dimensions_are_refused(tmp_path):
 
     source = changed_model(tmp_path, "ifc4", twice)
     refused(tmp_path, source, {mark_of(source, "J-1"): "IPE 270"}, "different dimensions")
+
+
+def test_a_profile_whose_values_are_stated_is_read_back_as_stated(tmp_path):
+    def state(model):
+        profile = next(p for p in model.by_type("IfcProfileDef") if p.ProfileName == "IPE 270")
+        area = model.create_entity("IfcAreaMeasure", 45.9e-4)  # the outline has 45.95 cm²
+        value = model.create_entity(
+            "IfcPropertySingleValue", Name="CrossSectionArea", NominalValue=area
+        )
+        model.create_entity(
+            "IfcProfileProperties", Name="Pset_ProfileMechanical", Properties=[value],
+            ProfileDefinition=profile,
+        )  # fmt: skip
+
+    source = changed_model(tmp_path, "ifc4", state)
+    _, done, _ = updated(tmp_path, source, {"J-1": "IPE 270"})
+    assert member(done, "J-1").section.area == pytest.approx(45.9e-4, rel=1e-9)

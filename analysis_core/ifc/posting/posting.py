@@ -203,7 +203,9 @@ class Posting:
         """Write all sets; yield after each batch how many elements are done."""
         effects = EffectsWriter(sets)
         diagrams = DiagramWriter(sets.lines, sets.measures, schema)
-        record = RecordWriter(sets, schema, self._outcome.rules, self._moment)
+        record = RecordWriter(
+            sets, schema, self._outcome.rules, self._moment, self._outcome.findings
+        )
         for begin in range(0, len(known), _BATCH):
             batch = self._effects(known[begin : begin + _BATCH], record)
             for found, tables in zip(batch, diagrams.write([f.curves for f in batch]), strict=True):

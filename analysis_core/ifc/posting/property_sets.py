@@ -13,6 +13,7 @@ from collections.abc import Collection, Mapping, Sequence
 from datetime import UTC, datetime
 
 from analysis_core import __version__
+from analysis_core.findings import Finding
 from analysis_core.ifc.global_ids import derived_ids
 from analysis_core.ifc.posting.governing import ElementEffects
 from analysis_core.ifc.posting.measures import Measure, Measures
@@ -169,7 +170,15 @@ class EffectsWriter:
 class RecordWriter:
     """Writes Spanledger_Record: how the results came about, the same for a whole line."""
 
-    def __init__(self, sets: SetWriter, schema: str, rules: str, moment: datetime) -> None:
+    def __init__(
+        self,
+        sets: SetWriter,
+        schema: str,
+        rules: str,
+        moment: datetime,
+        findings: Sequence[Finding] = (),
+    ) -> None:
+        self._given = [f for f in findings if f.slug == "member-given"]
         time = moment.astimezone(UTC).strftime("%Y-%m-%dT%H:%M:%SZ")
         kind = "IFCLABEL" if schema == "IFC2X3" else "IFCDATETIME"
         self._sets = sets
@@ -178,7 +187,6 @@ class RecordWriter:
         self._rest = (
             sets.text("ComputedAt", kind, time),
             sets.text("Version", "IFCLABEL", __version__),
-            sets.lines.shared(f"IFCPROPERTYSINGLEVALUE('Caution',$,IFCTEXT({string(CAUTION)}),$)"),
         )
         self._known: dict[tuple[int, ...], str] = {}
 
@@ -193,13 +201,21 @@ class RecordWriter:
         refs = self._known.get(key)
         if refs is None:
             numbers = [self._method, *self._checks(results), self._rules,
-                       self._fingerprint(results), *self._basis(results), *self._rest]  # fmt: skip
+                       self._fingerprint(results), *self._basis(results), *self._rest,
+                       self._caution(results)]  # fmt: skip
             refs = self._known[key] = ",".join(f"#{n}" for n in numbers)
         if members:
             named = string(", ".join(members))
             body = f"IFCPROPERTYSINGLEVALUE('AnalysedAs',$,IFCTEXT({named}),$)"
             refs += f",#{self._sets.lines.shared(body)}"
         self._sets.add(element, RECORD, refs)
+
+    def _caution(self, results: Sequence[LineResult]) -> int:
+        """The caution; it also tells of members that were solved otherwise than modelled."""
+        elements = {m.element for result in results for m in result.line.members}
+        told = [f.message for f in self._given if not elements.isdisjoint(f.elements)]
+        text = string(" ".join([CAUTION, *told]))
+        return self._sets.lines.shared(f"IFCPROPERTYSINGLEVALUE('Caution',$,IFCTEXT({text}),$)")
 
     def _checks(self, results: Sequence[LineResult]) -> list[int]:
         checks = [r.verification for r in results if r.verification is not None]

@@ -7,6 +7,7 @@ from collections.abc import Iterable
 from typing import Any
 
 from analysis_core.errors import JobError
+from analysis_core.ifc.sections.profile_properties import stated_by_profile
 from analysis_core.ifc.sections.reader import SectionReader, measures_of
 from analysis_core.ifc.updating.editor import Editor
 from analysis_core.ifc.updating.made import made_profile
@@ -27,7 +28,8 @@ class Chooser:
     def __init__(self, editor: Editor, settings: Settings) -> None:
         self._editor = editor
         self._settings = settings
-        self.sections = SectionReader(measures_of(editor.units))
+        stated = stated_by_profile(editor.file, editor.units)
+        self.sections = SectionReader(measures_of(editor.units), stated)
 
     def profile(self, name: str) -> Any:
         """Return the profile of this name.  Raises JobError where it is not known, or not one."""

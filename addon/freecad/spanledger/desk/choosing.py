@@ -30,6 +30,8 @@ class Choosing(QtCore.QObject):
         self._keeper = ShelfKeeper()
         self.section_dialog: Any = None
         self.lightest_dialog: Any = None
+        self._sought_for = ""
+        """The job file that the last search was made with."""
 
     def ask_for_section(self) -> None:
         """Show the sections and materials that the chosen line, or its span, can be given."""
@@ -42,7 +44,9 @@ class Choosing(QtCore.QObject):
 
             window = FreeCADGui.getMainWindow()
             self.section_dialog = SectionDialog(offered, shelf, opened.units, window)
-            self.section_dialog.decided.connect(desk.decide)
+            self.section_dialog.decided.connect(
+                lambda title, change: self._decide(opened, title, change)
+            )
             self.section_dialog.show()
 
         self._with_shelf(opened, show)
@@ -63,6 +67,7 @@ class Choosing(QtCore.QObject):
             )
             dialog.stop_asked.connect(desk.runs.cancel)
             dialog.applied.connect(lambda choices: self._apply(opened, shelf, choices))
+            self._sought_for = ""
             self.lightest_dialog = dialog
             dialog.show()
 
@@ -94,7 +99,7 @@ class Choosing(QtCore.QObject):
             words = translate("Spanledger", "Something is still running; wait, or stop it.")
             dialog.stopped.emit(words)
             return
-        settings = opened.settings
+        settings, self._sought_for = opened.settings, opened.text
         kinds, names = wanted
         candidates = narrowed(shelf.offers[source].candidates, kinds, names)
 
@@ -119,7 +124,12 @@ class Choosing(QtCore.QObject):
 
     def _apply(self, opened: Any, shelf: Shelf, choices: Sequence[Choice]) -> None:
         changed = [c for c in choices if c.chosen and c.chosen != c.before]
-        if self._desk.opened is not opened or not changed:
+        if opened.text != self._sought_for:
+            words = translate(
+                "Spanledger",
+                "Something was decided since the search; seek the lightest section again.",
+            )
+            self._desk.tell(words)
             return
         names = ", ".join(dict.fromkeys(c.chosen for c in changed))
         title = translate("Spanledger", "Lightest sections: {names}").format(names=names)
@@ -132,4 +142,12 @@ class Choosing(QtCore.QObject):
                 text = decide_members(text, elements, profile=choice.chosen, row=row)
             return text
 
+        self._decide(opened, title, change)
+
+    def _decide(self, opened: Any, title: str, change: Callable[[str], str]) -> None:
+        """Decide in the model that the window was opened for, if it is still looked at."""
+        if self._desk.opened is not opened:
+            words = translate("Spanledger", "'{name}' is no longer the model in front.")
+            self._desk.tell(words.format(name=opened.path.name))
+            return
         self._desk.decide(title, change)

@@ -6,7 +6,7 @@ from pathlib import Path
 from typing import Any
 
 from ..present.posting import PostPreview
-from ..qt import QtWidgets, Signal
+from ..qt import Qt, QtWidgets, Signal
 from ..texts import translate
 from .fields import button, entry
 
@@ -30,7 +30,13 @@ class PostDialog(QtWidgets.QDialog):
         proposed = source.with_name(f"{source.stem}_posted{source.suffix}")
         self.path = entry("SpanledgerPostPath", str(proposed))
         self.browse = button("SpanledgerPostBrowse", translate("Spanledger", "Choose…"))
-        summary = QtWidgets.QLabel(shown.summary)
+        words = shown.summary
+        if shown.refusal:
+            not_so = translate("Spanledger", "Sections and materials stay as the model has them:")
+            words += f"\n⚠ {not_so} {shown.refusal}"
+        summary = QtWidgets.QLabel(words)
+        summary.setObjectName("SpanledgerPostSummary")
+        summary.setTextFormat(Qt.TextFormat.PlainText)
         summary.setWordWrap(True)
         self.tree = _tree(shown)
         self.members = QtWidgets.QGroupBox(

@@ -9,6 +9,8 @@ from typing import TYPE_CHECKING, Any
 import FreeCAD
 import FreeCADGui
 
+from analysis_core.errors import JobError
+
 from ..present.posting import posted_words, preview
 from ..qt import QtCore
 from ..worker import Progress
@@ -34,15 +36,18 @@ class PostingDesk(QtCore.QObject):
         opened = self._desk.solved
         settings = opened.settings
         if not settings.members:
-            self._show(opened, ())
+            self._show(opened, (), "")
             return
 
-        def task(progress: Progress) -> Any:
-            return pipeline.member_changes(opened.path, settings, progress=progress)
+        def task(progress: Progress) -> tuple[Sequence[Change], str]:
+            try:
+                return pipeline.member_changes(opened.path, settings, progress=progress), ""
+            except JobError as refusal:  # the results can be posted all the same
+                return (), str(refusal)
 
-        def done(changes: Sequence[Change]) -> None:
+        def done(found: tuple[Sequence[Change], str]) -> None:
             if self._desk.solved is opened:
-                self._show(opened, changes)
+                self._show(opened, *found)
 
         self._desk.runs.start(task, done)
 
@@ -78,10 +83,10 @@ class PostingDesk(QtCore.QObject):
         elif self._desk.opened is opened:
             self._desk.run_again()
 
-    def _show(self, opened: Any, changes: Sequence[Change]) -> None:
+    def _show(self, opened: Any, changes: Sequence[Change], refusal: str) -> None:
         from .post_dialog import PostDialog
 
-        shown = preview(opened.outcome, opened.units, changes)
+        shown = preview(opened.outcome, opened.units, changes, refusal)
         self.dialog = PostDialog(opened.path, shown, FreeCADGui.getMainWindow())
         self.dialog.wanted.connect(lambda target, members: self.post(target, members=members))
         self.dialog.show()

@@ -49,6 +49,8 @@ class PostPreview:
     """Marks of lines that were not analysed."""
     changes: tuple[MemberChange, ...] = ()
     """What the members given others would change in the model."""
+    refusal: str = ""
+    """Why they cannot be changed in the model."""
 
     @property
     def summary(self) -> str:
@@ -65,7 +67,12 @@ class PostPreview:
         return words
 
 
-def preview(outcome: Outcome, units: DisplayUnits, changes: Sequence[Change] = ()) -> PostPreview:
+def preview(
+    outcome: Outcome,
+    units: DisplayUnits,
+    changes: Sequence[Change] = (),
+    refusal: str = "",
+) -> PostPreview:
     """Return what posting this outcome will write, and ``changes`` of members before it."""
     names = dict(outcome.model.names)
     parts = element_parts(outcome)
@@ -89,6 +96,7 @@ def preview(outcome: Outcome, units: DisplayUnits, changes: Sequence[Change] = (
                          safe(c.new))
             for c in changes
         ),
+        refusal=safe(refusal),
     )  # fmt: skip
 
 

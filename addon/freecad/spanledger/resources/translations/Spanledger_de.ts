@@ -4,6 +4,10 @@
   <context>
     <name>Spanledger</name>
     <message>
+      <source>'{name}' is no longer the model in front.</source>
+      <translation>„{name}“ ist nicht mehr das Modell im Vordergrund.</translation>
+    </message>
+    <message>
       <source>'{name}' or its job file changed; balance its lines again.</source>
       <translation>'{name}' oder die Auftragsdatei hat sich geändert; die Trägerzüge neu ausgleichen.</translation>
     </message>
@@ -680,6 +684,10 @@
       <translation>Querschnitt von {mark}</translation>
     </message>
     <message>
+      <source>Sections and materials stay as the model has them:</source>
+      <translation>Querschnitte und Baustoffe bleiben, wie das Modell sie hat:</translation>
+    </message>
+    <message>
       <source>Sections that change: {count}; {mass} kg less in all.</source>
       <translation>Geänderte Querschnitte: {count}; insgesamt {mass} kg weniger.</translation>
     </message>
@@ -758,6 +766,10 @@
     <message>
       <source>Something is still running; wait, or stop it.</source>
       <translation>Es läuft noch etwas; warten oder anhalten.</translation>
+    </message>
+    <message>
+      <source>Something was decided since the search; seek the lightest section again.</source>
+      <translation>Seit der Suche wurde etwas entschieden; bitte den leichtesten Querschnitt neu suchen.</translation>
     </message>
     <message>
       <source>Span {number} of {mark}</source>
