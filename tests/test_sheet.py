@@ -204,11 +204,11 @@ def test_symbols_have_their_subscripts_and_numbers_stand_between_signs():
     assert symbols("λ_LT²").text == "λ<sub>LT</sub>²"
     assert symbols("<b>_x").text == "&lt;b&gt;_x"
     assert formula(step).text == "W<sub>pl</sub> f<sub>y</sub> / γ<sub>M0</sub>"
-    assert numbers(step, metric) == "628.4 cm³ · 355.0 MPa / 1"
+    assert numbers(step, metric).text == "628.4 cm³ · 355.0 MPa / 1"
     squared = Step(
         "x", "π² {E} {L}² / 2", 1.0, "", "", (("E", 1e6, "stress"), ("L", 3.0, "length"))
     )
-    assert numbers(squared, metric) == "π² · 1.0 MPa · (3.000 m)² / 2"
+    assert numbers(squared, metric).text == "π² · 1.0 MPa · (3.000 m)² / 2"
 
 
 def test_equal_lines_refer_to_the_first_of_them(outcome, text):

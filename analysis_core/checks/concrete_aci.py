@@ -307,10 +307,10 @@ def _redistribution(design: MemberDesign, f: Figures) -> Check | None:
     w = Working()
     strain, _ = least_strain(design, f, bottom=False)
     w.step("ε_t", "", strain, "", "6.6.5.2", note="which the hogging reinforcement keeps")
-    most = w.step(
-        "limit", "1000 {ε_t} % ≤ {most}", min(shift.figure("per_strain") * strain,
-        shift.figure("most")), "", "6.6.5.3", ε_t=(strain, ""), most=(shift.figure("most"), ""),
-    )  # fmt: skip
+    part = shift.figure("per_strain")
+    most = w.step("limit", "{k} {ε_t} ≤ {most}", min(part * strain, shift.figure("most")), "",
+                  "6.6.5.3", note="1000 ε_t percent", k=(part, ""), ε_t=(strain, ""),
+                  most=(shift.figure("most"), ""))  # fmt: skip
     return w.check(
         "redistribution", "ACI 318-19, 6.6.5", demand=shift.fraction, resistance=most, quantity="",
         not_covered="Flexure and shear are checked with the redistributed moments; they must not "

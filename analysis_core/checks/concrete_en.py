@@ -174,9 +174,12 @@ def _bending(
     )
     _flexure_steps(w, moment, found, width, d, fcd, fyd, cover, flange, limit, words)
     least = _least(design, f, fck, d, bottom=bottom)
-    w.step("A_s,min", "0.26 f_ctm/f_yk b_t d ≥ 0.0013 b_t d", least, "area", "9.2.1.1(1), (9.1N)",
-           note=f"f_ctm = {mean_tensile_strength(fck) / 1e6:.2f} MPa, b_t the mean width of the "
-           f"tension zone")  # fmt: skip
+    tensile = mean_tensile_strength(fck)
+    wide = least / d / max(0.26 * tensile / f["f_yk"], 0.0013)
+    w.step("A_s,min", "0.26 {f_ctm} / {f_yk} {b_t} {d} ≥ 0.0013 b_t d", least, "area",
+           "9.2.1.1(1), (9.1N)", note="b_t the mean width of the tension zone",
+           f_ctm=(tensile, "stress"), f_yk=(f["f_yk"], "stress"), b_t=(wide, "section length"),
+           d=(d, "section length"))  # fmt: skip
     needed = w.step("A_s", "", max(found.tension, least), "area", "",
                     note="tension reinforcement to be put in: the larger")  # fmt: skip
     largest = w.step(
@@ -228,8 +231,11 @@ def _flexure_steps(
                "the sides of the flange take b_eff - b_w over h_f, the web the rest")  # fmt: skip
         w.step("x/d", "", found.x_over_d, "", "3.1.7(3)", note=words)
     else:
-        w.step("x/d", "(1 - √(1 - 2 μ)) / 0.8", found.x_over_d, "", "3.1.7(3)",
-               note=words + ("; reached" if found.compression else ""))  # fmt: skip
+        if found.compression:
+            w.step("x/d", "", found.x_over_d, "", "3.1.7(3)", note=f"{words}: reached")
+        else:
+            w.step("x/d", "(1 - √(1 - 2 {μ})) / 0.8", found.x_over_d, "", "3.1.7(3)", note=words,
+                   μ=(moment / (width * d**2 * fcd), ""))  # fmt: skip
     if not found.compression:
         w.step("z", "" if in_web else "{d} (1 - 0.4 {x/d})", found.lever, "section length", "",
                note="", d=(d, "section length"), **{"x/d": (found.x_over_d, "")})  # fmt: skip
@@ -330,7 +336,8 @@ def _shear(design: MemberDesign, f: Figures, fck: float) -> Check:
     nu = f["nu_1"] * (1.0 - fck / 250e6)
     cot = _strut(demand, b * lever * nu * fcd, f["cot_theta_max"])
     w.step("z", "0.9 {d}", lever, "section length", "6.2.3(1)", d=(d, "section length"))
-    w.step("ν_1", "{k} (1 - f_ck/250 MPa)", nu, "", "6.2.2(6), (6.6N)", k=(f["nu_1"], ""))
+    w.step("ν_1", "{k} (1 - {f_ck} / 250 MPa)", nu, "", "6.2.2(6), (6.6N)", k=(f["nu_1"], ""),
+           f_ck=(fck, "stress"))  # fmt: skip
     w.step("cot θ", "", cot, "", "6.2.3(2)", note="as flat as the struts allow")
     strut = {"b_w": (b, "section length"), "z": (lever, "section length"), "ν_1": (nu, ""),
              "f_cd": (fcd, "stress")}  # fmt: skip

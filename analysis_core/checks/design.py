@@ -242,6 +242,14 @@ def _noise(moment: Floats) -> float:
     return 1e-9 * float(np.abs(moment).max(initial=0.0))
 
 
+def gradient_operands(segment: UnbracedSegment) -> dict[str, tuple[float, str]]:
+    """Return the moments of ``moment_gradient`` by symbol, with their quantity."""
+    m0, m1, m2, m3, m4 = (abs(m) for m in segment.moments)
+    top = max(m0, m1, m2, m3, m4, abs(segment.largest))
+    return {name: (value, "moment")
+            for name, value in (("M_max", top), ("M_2", m1), ("M_3", m2), ("M_4", m3))}  # fmt: skip
+
+
 def moment_gradient(segment: UnbracedSegment) -> float:
     """Return the factor for the shape of the moments over an unbraced segment.
 

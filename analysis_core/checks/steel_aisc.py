@@ -15,6 +15,7 @@ from analysis_core.checks.design import (
     EffectField,
     MemberDesign,
     UnbracedSegment,
+    gradient_operands,
     is_stainless,
     moment_gradient,
     plates,
@@ -238,7 +239,18 @@ def _local(w: Working, s: IShape, e: float, fy: float) -> float:
     w.step("b/t", "", slender, "", "Table B4.1b", note=f"limit {compact:.2f}: {words}")
     if slender <= compact:
         return plastic
-    return w.step("M_n,FLB", "", flange_strength(s, e, fy), "moment", "F3.2")
+    compact, noncompact = flange_limits(s, e, fy)
+    value = flange_strength(s, e, fy)
+    given = {"λ": (slender, ""), "S_x": (s.sx, "section modulus")}
+    if slender <= noncompact:
+        return w.step(
+            "M_n,FLB",
+            "{M_p} - ({M_p} - 0.7 {F_y} {S_x}) ({λ} - {λ_pf}) / ({λ_rf} - {λ_pf})", value,
+            "moment", "(F3-1)", note="", M_p=(plastic, "moment"), F_y=(fy, "stress"),
+            λ_pf=(compact, ""), λ_rf=(noncompact, ""), **given,
+        )  # fmt: skip
+    return w.step("M_n,FLB", "0.9 {E} {k_c} {S_x} / {λ}²", value, "moment", "(F3-2)", note="",
+                  E=(e, "stress"), k_c=(_kc(s), ""), **given)  # fmt: skip
 
 
 def _segment(s: IShape, f: Figures, fy: float, segment: UnbracedSegment, allowable: bool) -> Check:
@@ -249,14 +261,19 @@ def _segment(s: IShape, f: Figures, fy: float, segment: UnbracedSegment, allowab
     lb = w.step("L_b", "", f["k_L"] * segment.buckling_length, "length", "", note=words)
     w.step("L_p", "1.76 {r_y} √({E}/{F_y})", lp, "length", "(F2-5)",
            r_y=(s.ry, "section length"), E=(e, "stress"), F_y=(fy, "stress"))  # fmt: skip
-    w.step("L_r", "1.95 {r_ts} {E}/(0.7 {F_y}) √(x + √(x² + 6.76 (0.7 {F_y}/{E})²))", lr,
-           "length", "(F2-6)", note="x = J c / (S_x h_o)",
-           r_ts=(s.rts, "section length"), E=(e, "stress"), F_y=(fy, "stress"))  # fmt: skip
-    words = "1 at a free end" if segment.free else "from the moments at the quarter points"
-    cb = w.step("C_b", "12.5 M_max / (2.5 M_max + 3 M_A + 4 M_B + 3 M_C)",
-                moment_gradient(segment), "", "(F1-1)", note=words)  # fmt: skip
-    equation = "(F2-1)" if lb <= lp else "(F2-2)" if lb <= lr else "(F2-3), (F2-4)"
-    lateral = w.step("M_n,LTB", "", lateral_strength(s, e, fy, lb, cb), "moment", equation)
+    torsion = w.step("x", "{J} {c} / ({S_x} {h_o})", s.j * s.c / (s.sx * s.ho), "", "(F2-6)",
+                     J=(s.j, "inertia"), c=(s.c, ""), S_x=(s.sx, "section modulus"),
+                     h_o=(s.ho, "section length"))  # fmt: skip
+    w.step("L_r", "1.95 {r_ts} {E}/(0.7 {F_y}) √({x} + √({x}² + 6.76 (0.7 {F_y}/{E})²))", lr,
+           "length", "(F2-6)", r_ts=(s.rts, "section length"), E=(e, "stress"),
+           F_y=(fy, "stress"), x=(torsion, ""))  # fmt: skip
+    if segment.free:
+        cb = w.step("C_b", "", moment_gradient(segment), "", "F1", note="1 at a free end")
+    else:
+        cb = w.step("C_b", "12.5 {M_max} / (2.5 {M_max} + 3 {M_2} + 4 {M_3} + 3 {M_4})",
+                    moment_gradient(segment), "", "(F1-1)", note="moments at the quarter points",
+                    **gradient_operands(segment))  # fmt: skip
+    lateral = _lateral_step(w, s, e, fy, lb, cb)
     nominal = w.step("M_n", "", min(lateral, local), "moment", "F2, F3", note="the smaller")
     available = available_strength(w, f, "b", nominal, allowable)
     return w.check(
@@ -264,6 +281,28 @@ def _segment(s: IShape, f: Figures, fy: float, segment: UnbracedSegment, allowab
         demand=segment.largest,
         resistance=available, quantity="moment", x=segment.at, source=segment.source,
         not_covered=NOT_COVERED,
+    )  # fmt: skip
+
+
+def _lateral_step(w: Working, s: IShape, e: float, fy: float, lb: float, cb: float) -> float:
+    """Write M_n for lateral torsional buckling down, by the formula that holds for L_b."""
+    lp, lr = limiting_lengths(s, e, fy)
+    value = lateral_strength(s, e, fy, lb, cb)
+    sx, c = (s.sx, "section modulus"), (cb, "")
+    if lb <= lp:
+        return w.step("M_n,LTB", "", value, "moment", "(F2-1)", note="L_b ≤ L_p: M_p")
+    if lb <= lr:
+        return w.step(
+            "M_n,LTB",
+            "{C_b} ({M_p} - ({M_p} - 0.7 {F_y} {S_x}) ({L_b} - {L_p}) / ({L_r} - {L_p})) ≤ M_p",
+            value, "moment", "(F2-2)", note="", C_b=c, M_p=(fy * s.zx, "moment"),
+            F_y=(fy, "stress"), S_x=sx, L_b=(lb, "length"), L_p=(lp, "length"),
+            L_r=(lr, "length"),
+        )  # fmt: skip
+    return w.step(
+        "M_n,LTB", "{C_b} π² {E} {S_x} / ({L_b}/{r_ts})² √(1 + 0.078 {x} ({L_b}/{r_ts})²) ≤ M_p",
+        value, "moment", "(F2-3), (F2-4)", note="", C_b=c, E=(e, "stress"), S_x=sx,
+        L_b=(lb, "length"), r_ts=(s.rts, "section length"), x=(s.j * s.c / (s.sx * s.ho), ""),
     )  # fmt: skip
 
 

@@ -137,8 +137,19 @@ def _member(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
     w.step("k_yy", "", k_yy, "", "annex B, Table B.1", note="C_my = 1")
     words = "largest value of Table B.2" if section.shape == "I" else "0.8 k_yy, Table B.1"
     w.step("k_zy", "", 1.0 if section.shape == "I" else 0.8 * k_yy, "", "annex B", note=words)
-    w.step("(6.61), (6.62)", "N_Ed / (χ N_Rk/γ_M1) + k M_y,Ed / (χ_LT M_y,Rk/γ_M1) ≤ 1", use, "",
-           "6.3.3(4)", note="the larger of both")  # fmt: skip
+    k_zy = 1.0 if section.shape == "I" else 0.8 * k_yy
+    common = {"N_Ed": (force, "force"), "N_Rk/γ_M1": (squash, "force"),
+              "M_y,Ed": (moment, "moment"), "χ_LT": (chi_lt, ""),
+              "M_y,Rk/γ_M1": (moment_resistance, "moment")}  # fmt: skip
+    for axis, chi, factor, equation in (
+        ("y", chi_y[0], k_yy, "(6.61)"), ("z", chi_z[0], k_zy, "(6.62)"),
+    ):  # fmt: skip
+        value = force / (chi * squash) + factor * moment / (chi_lt * moment_resistance)
+        w.step(
+            f"use_{axis}", f"{{N_Ed}} / ({{χ_{axis}}} {{N_Rk/γ_M1}}) + {{k_{axis}y}} {{M_y,Ed}} / "
+            "({χ_LT} {M_y,Rk/γ_M1})", value, "", f"6.3.3(4), {equation}", note="",
+            **common, **{f"χ_{axis}": (chi, ""), f"k_{axis}y": (factor, "")},
+        )  # fmt: skip
     return w.check(
         name, clause, demand=use, resistance=1.0, quantity="", source=field.source,
         not_covered=_NOT_COVERED,

@@ -7,6 +7,7 @@ import math
 from analysis_core.checks.design import (
     MemberDesign,
     UnbracedSegment,
+    gradient_operands,
     moment_gradient,
     plates,
     segments,
@@ -96,9 +97,12 @@ def _reduction(
     chi = reduction_factor(slender, IMPERFECTION[curve], plateau=plateau, beta=beta)
     if w is None:
         return chi
-    words = "a free end: none taken" if segment.free else "from the moments at the quarter points"
-    w.step("C_1", "12.5 M_max / (2.5 M_max + 3 M_2 + 4 M_3 + 3 M_4)", c1, "", "common practice",
-           note=words)  # fmt: skip
+    if segment.free:
+        w.step("C_1", "", c1, "", "common practice", note="a free end: none taken")
+    else:
+        w.step("C_1", "12.5 {M_max} / (2.5 {M_max} + 3 {M_2} + 4 {M_3} + 3 {M_4})", c1, "",
+               "common practice", note="moments at the quarter points",
+               **gradient_operands(segment))  # fmt: skip
     w.step(
         "M_cr", "{C_1} π² {E} {I_z} / {L}² √({I_w}/{I_z} + {L}² {G} {I_t} / (π² {E} {I_z}))",
         critical, "moment", "literature; load at the shear centre",
@@ -111,12 +115,21 @@ def _reduction(
         W_y=(modulus, "section modulus"), f_y=(fy, "stress"), M_cr=(critical, "moment"),
     )  # fmt: skip
     w.step("α_LT", "", IMPERFECTION[curve], "", "Tables 6.3, 6.5", note=why)
-    if rolled:
-        return w.step(
-            "χ_LT", "1 / (Φ_LT + √(Φ_LT² - β λ_LT²)) ≤ 1, ≤ 1/λ_LT²", chi, "",
-            "6.3.2.3(1), (6.57)", note=f"plateau {plateau:g}, β = {beta:g}",
-        )  # fmt: skip
-    return w.step("χ_LT", "1 / (Φ_LT + √(Φ_LT² - λ_LT²)) ≤ 1", chi, "", "6.3.2.2(1), (6.56)")
+    if slender <= plateau:
+        return w.step("χ_LT", "", chi, "", "6.3.2.2(4)", note=f"no reduction up to {plateau:g}")
+    alpha = IMPERFECTION[curve]
+    phi = w.step(
+        "Φ_LT", "0.5 (1 + {α_LT} ({λ_LT} - {λ_LT,0}) + {β} {λ_LT}²)",
+        0.5 * (1.0 + alpha * (slender - plateau) + beta * slender**2), "",
+        "6.3.2.3(1)" if rolled else "6.3.2.2(1)", note="", α_LT=(alpha, ""), λ_LT=(slender, ""),
+        β=(beta, ""), **{"λ_LT,0": (plateau, "")},
+    )  # fmt: skip
+    bound = " ≤ 1, ≤ 1/{λ_LT}²" if rolled else " ≤ 1"
+    return w.step(
+        "χ_LT", "1 / ({Φ_LT} + √({Φ_LT}² - {β} {λ_LT}²))" + bound, chi, "",
+        "6.3.2.3(1), (6.57)" if rolled else "6.3.2.2(1), (6.56)",
+        Φ_LT=(phi, ""), β=(beta, ""), λ_LT=(slender, ""),
+    )  # fmt: skip
 
 
 def buckling_curve(design: MemberDesign) -> tuple[str, str]:

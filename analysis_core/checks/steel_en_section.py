@@ -245,10 +245,32 @@ def shear_area(design: MemberDesign, eta: float) -> float:
     return 2.0 * area / math.pi
 
 
+def _shear_area_step(design: MemberDesign, eta: float, w: Working) -> float:
+    """Write A_v down with the formula of its shape."""
+    d, section = plates(design.section), design.section
+    value = shear_area(design, eta)
+    size = "section length"
+    area = {"A": (section.area, "area")}
+    if section.shape == "tube":
+        return w.step("A_v", "2 {A} / π", value, "area", "6.2.6(3)", note="", **area)
+    if section.shape == "hollow rectangle":
+        return w.step("A_v", "{A} {h} / ({b} + {h})", value, "area", "6.2.6(3)", note="",
+                      h=(section.depth, size), b=(section.width, size), **area)  # fmt: skip
+    tf, tw, r = d["flange_thickness"], d["web_thickness"], d.get("fillet_radius", 0.0)
+    given = {"b": (d["width"], size), "t_f": (tf, size), "t_w": (tw, size), "r": (r, size)}
+    if section.shape == "channel":
+        return w.step("A_v", "{A} - 2 {b} {t_f} + ({t_w} + {r}) {t_f}", value, "area", "6.2.6(3)",
+                      note="", **area, **given)  # fmt: skip
+    if not is_welded(design) and value > eta * (d["depth"] - 2.0 * tf) * tw:
+        return w.step("A_v", "{A} - 2 {b} {t_f} + ({t_w} + 2 {r}) {t_f}", value, "area",
+                      "6.2.6(3)", note="more than η h_w t_w", **area, **given)  # fmt: skip
+    return w.step("A_v", "{η} {h_w} {t_w}", value, "area", "6.2.6(3)", note="", η=(eta, ""),
+                  h_w=(d["depth"] - 2.0 * tf, size), t_w=(tw, size))  # fmt: skip
+
+
 def shear_resistance_of(design: MemberDesign, f: Figures, fy: float, w: Working) -> float:
     """Return V_pl,Rd in N, or V_b,Rd where the web buckles before, and write it down."""
-    area = w.step("A_v", "", shear_area(design, f["eta"]), "area", "6.2.6(3)",
-                  note="shear area of the section")  # fmt: skip
+    area = _shear_area_step(design, f["eta"], w)
     plastic = w.step(
         "V_pl,Rd", "{A_v} ({f_y} / √3) / {gamma_M0}", area * fy / math.sqrt(3.0) / f["gamma_M0"],
         "force", "6.2.6(2), (6.18)",

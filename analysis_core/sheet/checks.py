@@ -8,7 +8,7 @@ from collections.abc import Sequence
 
 from analysis_core.checks.working import Check, Step
 from analysis_core.sheet.html import Markup, join, tag
-from analysis_core.sheet.symbols import formula, numbers, symbols, value_text
+from analysis_core.sheet.symbols import bounded, formula, numbers, symbols, value_text
 from analysis_core.sheet.table import table
 from analysis_core.units import DisplayUnits
 
@@ -97,7 +97,9 @@ def _step(step: Step, units: DisplayUnits) -> Markup:
     if step.formula:
         parts += [" = ", formula(step)]
         if step.operands:
-            parts.append(f" = {numbers(step, units)}")
+            parts += [" = ", numbers(step, units)]
+        if bounded(step):
+            parts += ["; ", tag("i", symbols(step.symbol))]
     parts.append(f" = {_value(step.value, step.quantity, units)}")
     if step.note:
         parts += ["; ", symbols(step.note)]

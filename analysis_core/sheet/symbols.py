@@ -39,18 +39,29 @@ def formula(step: Step) -> Markup:
     return symbols(_OPERAND.sub(lambda match: _GREEK.get(match[1], match[1]), step.formula))
 
 
-def numbers(step: Step, units: DisplayUnits) -> str:
+def numbers(step: Step, units: DisplayUnits) -> Markup:
     """Return a step's formula with numbers in the place of its operands."""
     values = {name: value_text(value, quantity, units) for name, value, quantity in step.operands}
     multiplied = _SIDE_BY_SIDE.sub(" · ", step.formula)
     multiplied = _POWER.sub(r"({\1})\2", multiplied)
-    return _OPERAND.sub(lambda match: values.get(match[1], match[1]), multiplied)
+    return symbols(_OPERAND.sub(lambda match: values.get(match[1], match[1]), multiplied))
+
+
+def bounded(step: Step) -> bool:
+    """Whether a formula holds a bound, so that its value need not be that of the numbers."""
+    return "≤" in step.formula or "≥" in step.formula
 
 
 def value_text(value: float, quantity: str, units: DisplayUnits) -> str:
-    """Return a value in display units; a pure number with as many digits as a check needs."""
+    """Return a value in display units, with as many digits as a check needs: three that count."""
     if quantity:
-        return units.text(value, quantity)
+        text = units.text(value, quantity)
+        number, _, symbol = text.partition(" ")
+        digits = sum(c.isdigit() for c in number.lstrip("-0."))
+        precise = f"{units.value(value, quantity):.3g}"
+        if 0 < digits < 3 and "." in number and float(precise) != float(number):
+            return f"{precise} {symbol}"
+        return text
     if abs(value - round(value)) < 1e-9 and abs(value) < 1000:
         return f"{value:.0f}".replace("-0", "0")
     return f"{value:.3f}" if abs(value) >= 0.01 else f"{value:.5f}"
