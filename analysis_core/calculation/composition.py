@@ -15,7 +15,7 @@ from analysis_core.report.record_rows import RecordTable, closing_note, record_t
 from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
 from analysis_core.sheet.anchors import anchor
-from analysis_core.sheet.checks import NOTE, line_checks
+from analysis_core.sheet.checks import NOTE, Told, line_checks
 from analysis_core.sheet.details import deflections, redistribution, support_moments
 from analysis_core.sheet.distribution import distribution, fixed_ends
 from analysis_core.sheet.document import sheet
@@ -41,13 +41,16 @@ def calculation_sheet(outcome: Outcome, settings: Settings, units: DisplayUnits,
 
     many = len(outcome.lines) > _MANY
     seen: dict[Hashable, LineResult] = {}
+    told = Told()
 
     def working(result: LineResult) -> list[Markup]:
         return distribution_parts(result, units, seen, _FEW if many else _MOST)
 
     def checks(result: LineResult) -> list[Markup]:
         of_line = found.get(result.line.mark, [])
-        return detail_parts(result, units) + check_parts(result, of_line, units, many=many)
+        return detail_parts(result, units) + check_parts(
+            result, of_line, units, many=many, told=told
+        )
 
     return sheet(
         outcome, units, title=settings.title, date=date, working=working, checks=checks,
@@ -62,7 +65,8 @@ def _how_much(many: bool) -> str:
     return (
         f"Of each line the {most} states with the largest moments are distributed by hand; a line "
         f"equal to an earlier one refers to it. The working of each check is written down for the "
-        f"member {of} that uses most of its resistance; the others follow the same formulas."
+        f"member {of} that uses most of its resistance; the others follow the same formulas, and a "
+        f"working equal in every number to an earlier one refers to it."
     )
 
 
@@ -142,11 +146,17 @@ def detail_parts(result: LineResult, units: DisplayUnits) -> list[Markup]:
 
 
 def check_parts(
-    result: LineResult, found: Sequence[MemberChecks], units: DisplayUnits, *, many: bool = False
+    result: LineResult,
+    found: Sequence[MemberChecks],
+    units: DisplayUnits,
+    *,
+    many: bool = False,
+    told: Told | None = None,
 ) -> list[Markup]:
     """Return the checks of the members of a line; deflections have a table of their own.
 
     ``many``: the working of each check once for the line, not for each of its sections.
+    ``told`` keeps the workings of the sheet.
     """
     found = _worked_once(result, [_without_limits(each) for each in found], by_section=not many)
     if not found:
@@ -154,7 +164,7 @@ def check_parts(
     members = [
         (member_name(result.line.members[e.member]), e.code, e.restraints, e.checks) for e in found
     ]
-    parts = line_checks(members, units)
+    parts = line_checks(members, units, mark=result.line.mark, told=told)
     return [tag("h3", "Member checks"), *parts, tag("p", NOTE, class_="verification")]
 
 

@@ -76,7 +76,7 @@ def _formula(member: Member, action: MemberAction, units: DisplayUnits) -> str:
             w = units.number(action.transverse[0], "line load")
             return f"∓ w L²/12 = {w} · {span}²/12"
         case DistributedForce():
-            return "∓ ∫ w(s) s (L-s)²/L² ds and ± ∫ w(s) s² (L-s)/L² ds over its stretch"
+            return _part_formula(action, length, units)
         case PointForce():
             force = units.number(action.transverse, "force")
             a = units.number(action.position, "length")
@@ -88,6 +88,25 @@ def _formula(member: Member, action: MemberAction, units: DisplayUnits) -> str:
             return f"M b (b-2a)/L², M a (a-2b)/L² with a = {a}, b = {b}"
         case ImposedCurvature():
             return "EI κ at each end over the whole length; else by integration"
+
+
+def _part_formula(action: DistributedForce, length: float, units: DisplayUnits) -> str:
+    """Closed forms of ∫ w s (L-s)²/L² ds and ∫ w s² (L-s)/L² ds, where w is uniform or linear."""
+    span = units.number(length, "length")
+    a, b = (units.number(s, "length") for s in (action.start, action.end))
+    if _uniform(action):
+        return (
+            f"w/(12 L²) [s² (6 L² - 8 L s + 3 s²)] from s = {a} to {b}, L = {span}; start "
+            f"negative, end w/(12 L²) [s³ (4 L - 3 s)]"
+        )
+    if len(action.transverse) == 2 and _whole(action, length):
+        first, last = (units.number(action.transverse_at(s), "line load")
+                       for s in (action.start, action.end))  # fmt: skip
+        return (
+            f"- (3 w_1 + 2 w_2) L²/60, (2 w_1 + 3 w_2) L²/60 = (2 · {first} + 3 · {last}) · "
+            f"{span}²/60"
+        )
+    return f"∓ ∫ w s (L-s)²/L² ds and ± ∫ w s² (L-s)/L² ds from {a} to {b}, L = {span}"
 
 
 def _uniform(action: DistributedForce) -> bool:

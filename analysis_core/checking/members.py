@@ -93,12 +93,11 @@ def check_line(result: LineResult, model: LineModel, settings: Settings) -> list
     timber = timber_fields(result, model, settings) if _TIMBER in codes else plain
     sags = timber_sags(result, _creep(settings)) if _TIMBER in codes else None
     factored = _factored(result)
-    prepared = {
-        fields is timber: designs(result, fields, model, settings) for fields in (plain, timber)
-    }
+    prepared = designs(result, plain, model, settings)
+    of_timber = prepared if timber is plain else designs(result, timber, model, settings)
     out = []
     for member, code in zip(result.line.members, codes, strict=True):
-        design = prepared[code == _TIMBER or timber is plain][member.id]
+        design = (of_timber if code == _TIMBER else prepared)[member.id]
         if design is not None and code == _TIMBER:
             design = replace(design, sags=None if sags is None else sags.get(member.id, ()))
         after = moved[member.id] if moved is not None else None

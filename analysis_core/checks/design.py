@@ -208,19 +208,21 @@ def segments(design: MemberDesign, field: EffectField) -> list[UnbracedSegment]:
         if continuous:
             continue
         x, moment = field.stretch
+        noise = _noise(moment)
         for start, end in _lengths(design, places):
-            inside = (x >= start - 1e-9) & (x <= end + 1e-9)
-            if not inside.any() or (sign * moment[inside]).max() <= _noise(moment):
+            first, last = np.searchsorted(x, (start - 1e-9, end + 1e-9))
+            inside = moment[first:last]
+            if not inside.size or (sign * inside).max() <= noise:
                 continue
-            index = int(np.abs(moment[inside]).argmax())
-            quarter = np.linspace(start, end, 5)
-            m0, m1, m2, m3, m4 = (float(m) for m in np.interp(quarter, x, moment))
-            largest = float(moment[inside][index])
+            index = int(first) + int(np.abs(inside).argmax())
+            quarter = [start + (end - start) * i / 4.0 for i in range(5)]
+            m0, m1, m2, m3, m4 = np.interp(quarter, x, moment).tolist()
+            largest = float(moment[index])
             loose = [m for e, m in ((start, m0), (end, m4)) if _among(e, held.loose)]
             tip = any(abs(m) > 1e-3 * abs(largest) for m in loose)
             out.append(
                 UnbracedSegment(
-                    start, end, flange, largest, float(x[inside][index]), (m0, m1, m2, m3, m4),
+                    start, end, flange, largest, float(x[index]), (m0, m1, m2, m3, m4),
                     field.source, bool(loose), tip,
                 )
             )  # fmt: skip

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 import re
 from collections.abc import Sequence
+from dataclasses import dataclass, field
 
 from analysis_core.checks.working import Check, Step
 from analysis_core.sheet.html import Markup, join, tag
@@ -13,16 +14,31 @@ from analysis_core.sheet.table import table
 from analysis_core.units import DisplayUnits
 
 _UNCONFIRMED = "†"
+_WORTH = 300
+"""Characters from which on a working is worth a reference to an equal one."""
 NOTE = f"{_UNCONFIRMED} Not compared with the standard: see Cautions."
 
 
+@dataclass(slots=True)
+class Told:
+    """Workings written down so far, by their text: what they are called and where they stand."""
+
+    places: dict[str, tuple[str, str]] = field(default_factory=dict)
+
+
 def line_checks(
-    members: Sequence[tuple[str, str, str, Sequence[Check]]], units: DisplayUnits
+    members: Sequence[tuple[str, str, str, Sequence[Check]]],
+    units: DisplayUnits,
+    *,
+    mark: str = "",
+    told: Told | None = None,
 ) -> list[Markup]:
     """Return the checks of the members of a line: a table of results, then the working.
 
-    ``members``: name, code, how it is held sideways, and its checks.
+    ``members``: name, code, how it is held sideways, and its checks.  ``told`` keeps the workings
+    of a sheet: one that is equal in every number to an earlier one refers to it by a link.
     """
+    told = told or Told()
     several = len({code for _, code, _, _ in members}) > 1
     rows = [
         (name, *_row(check, units, "" if several else _named(code)))
@@ -43,12 +59,12 @@ def line_checks(
     for name, _, restraints, _ in members:
         held.setdefault(restraints, []).append(name)
     sentences = [f"{', '.join(names)}: {restraints}." for restraints, names in held.items()]
-    parts.append(tag("p", "Held sideways. ", " ".join(sentences), class_="verification"))
+    parts.append(tag("p", "Where held sideways: ", " ".join(sentences), class_="verification"))
     said = ""
     for name, _, _, checks in members:
         for check in checks:
             if check.steps:
-                parts.append(_working(name, check, units, said=said))
+                parts.append(_working(f"{mark} {name}".strip(), check, units, said, told))
                 said = check.not_covered
     return parts
 
@@ -77,19 +93,29 @@ def _row(check: Check, units: DisplayUnits, code: str) -> tuple[Markup | str, ..
     )
 
 
-def _working(name: str, check: Check, units: DisplayUnits, *, said: str) -> Markup:
+def _working(name: str, check: Check, units: DisplayUnits, said: str, told: Told) -> Markup:
     """``said``: what the check before does not cover, which need not be repeated."""
-    items = [tag("li", _step(step, units)) for step in check.steps]
     governed = f", {check.source}" if check.source else ""
+    title = f"{check.name[0].upper()}{check.name[1:]}, {name}"
     left = "Not covered: as before." if check.not_covered == said else check.not_covered
     closing = tag("p", symbols(left), class_="aside") if check.not_covered else ""
+    steps = tag("ol", [tag("li", _step(step, units)) for step in check.steps], class_="steps")
+    known = told.places.get(steps.text)
+    if known is not None and len(steps.text) > _WORTH:
+        same = tag("p", "Number by number as ", tag("a", known[0], href=f"#{known[1]}"),
+                   ": ", _last(check, units), ".")  # fmt: skip
+        return tag("div", tag("p", title, governed, class_="working"), same, closing, class_="keep")
+    place = f"w{len(told.places) + 1}"
+    told.places.setdefault(steps.text, (title, place))
     return tag(
-        "div",
-        tag("p", f"{check.name[0].upper()}{check.name[1:]}, {name}{governed}", class_="working"),
-        tag("ol", items, class_="steps"),
-        closing,
-        class_="keep",
+        "div", tag("p", title, governed, class_="working"), steps, closing, id=place, class_="keep"
     )
+
+
+def _last(check: Check, units: DisplayUnits) -> Markup:
+    """What a working comes to: its last step."""
+    step = check.steps[-1]
+    return join(tag("i", symbols(step.symbol)), f" = {_value(step.value, step.quantity, units)}")
 
 
 def _step(step: Step, units: DisplayUnits) -> Markup:

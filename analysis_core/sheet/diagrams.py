@@ -7,11 +7,11 @@ positive downward; shear is drawn positive upward.
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from analysis_core.results import Extreme, LineEnvelope, MemberEnvelope
 from analysis_core.sheet.html import Markup, tag
-from analysis_core.sheet.strip import MARGIN, WIDTH, Strip
+from analysis_core.sheet.strip import MARGIN, WIDTH, Strip, pixels, runs
 from analysis_core.units import DisplayUnits
 
 _HALF = 58.0  # pixels of the largest ordinate
@@ -57,15 +57,16 @@ def diagram(kind: _Kind, envelope: LineEnvelope, at: Strip, units: DisplayUnits)
     axis = _HALF + _LABEL + 4.0
     parts = [_bound(kind.lower, "lower", members, at, axis, scale)]
     parts.append(_bound(kind.upper, "upper", members, at, axis, scale))
-    ends = zip(at.starts, at.ends, strict=True)
-    base = "".join(f"M{_px(a)},{_px(axis)}H{_px(b)}" for a, b in ends)
-    parts.append(tag("path", d=base, class_="axis"))
-    peaks, texts = "", []
+    parts.append(tag("path", d=runs(at.starts, at.ends, axis), class_="axis"))
+    labels: dict[tuple[str, str, str], _Label] = {}
     for index, member in enumerate(members):
-        for x, y, text in _labels(kind, member, index, at, axis, scale, largest, units):
-            peaks += f"M{_px(x)},{_px(y)}h0"
-            texts.append(text)
-    if peaks:
+        for label in _labels(kind, member, index, at, axis, scale, largest, units):
+            key = pixels(label.x), pixels(label.y), label.text
+            # Both sides of a bearing have one moment: one label, in the middle.
+            labels[key] = label if key not in labels else replace(label, anchor=None)
+    if labels:
+        peaks = "".join(f"M{x},{y}h0" for x, y, _ in labels)
+        texts = [label.markup() for label in labels.values()]
         parts += [tag("path", d=peaks, class_="peaks"), tag("g", texts, class_="value")]
     unit = units.symbol(kind.quantity)
     title = f"{kind.name} [{unit}]"
@@ -100,12 +101,14 @@ def _bound(
             (round(at.at(index, float(x)), 1), round(axis + scale * v, 1))
             for x, v in zip(member.x[::step], values(member)[::step], strict=True)
         ]
-        path, (x0, y0) = f"M{_px(start)},{_px(axis)}", (round(start, 1), round(axis, 1))
+        path, (x0, y0) = f"M{pixels(start)},{pixels(axis)}", (round(start, 1), round(axis, 1))
         for x, y in thinned(points):
-            across, down = _px(x - x0), _px(y - y0)
+            if (x, y) == (x0, y0):
+                continue
+            across, down = pixels(x - x0), pixels(y - y0)
             path += f"l{across}{'' if down.startswith('-') else ','}{down}"
             x0, y0 = x, y
-        pieces.append(f"{path}V{_px(axis)}Z")
+        pieces.append(f"{path}V{pixels(axis)}Z")
     return tag("path", d="".join(pieces), class_=f"area {name}")
 
 
@@ -124,15 +127,25 @@ def thinned(points: Sequence[tuple[float, float]]) -> list[tuple[float, float]]:
     return [*kept, points[-1]]
 
 
-def _px(value: float) -> str:
-    text = f"{value:.1f}".removesuffix(".0")
-    return "0" if text == "-0" else text
+@dataclass(frozen=True, slots=True)
+class _Label:
+    x: float
+    y: float
+    text: str
+    below: bool
+    anchor: str | None
+
+    def markup(self) -> Markup:
+        return tag(
+            "text", self.text, x=min(max(self.x, MARGIN), WIDTH - MARGIN),
+            y=self.y + (13.0 if self.below else -5.0), text_anchor=self.anchor,
+        )  # fmt: skip
 
 
 def _labels(
     kind: _Kind, member: MemberEnvelope, index: int, at: Strip, axis: float, scale: float,
     largest: float, units: DisplayUnits,
-) -> list[tuple[float, float, Markup]]:  # fmt: skip
+) -> list[_Label]:  # fmt: skip
     """Place of each extreme and its label."""
     out = []
     for extreme in kind.extremes(member):
@@ -145,10 +158,6 @@ def _labels(
             anchor = "start"
         elif extreme.x > 0.98 * float(member.x[-1]):
             anchor = "end"
-        text = tag(
-            "text", units.number(extreme.value, kind.quantity),
-            x=min(max(x, MARGIN), WIDTH - MARGIN), y=y + (13.0 if below else -5.0),
-            text_anchor=anchor,
-        )  # fmt: skip
-        out.append((x, y, text))
+        text = units.number(extreme.value, kind.quantity)
+        out.append(_Label(x, y, text, below, anchor))
     return out

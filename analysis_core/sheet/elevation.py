@@ -15,7 +15,7 @@ from analysis_core.model import (
 )
 from analysis_core.sheet.frame import frame_elevation
 from analysis_core.sheet.html import Markup, tag
-from analysis_core.sheet.strip import WIDTH, Strip
+from analysis_core.sheet.strip import WIDTH, Strip, pixels, runs
 from analysis_core.units import DisplayUnits
 
 _AXIS = 44.0
@@ -51,21 +51,25 @@ def actions_drawing(line: Line, case: str, at: Strip, units: DisplayUnits) -> Ma
     largest = max((_intensity(a) for a in acting if isinstance(a, DistributedForce)), default=0.0)
     index_of = {m.id: i for i, m in enumerate(at.members)}
     y = _LOAD + 34.0
-    base = "".join(f"M{a:.1f},{y:g}H{b:.1f}" for a, b in zip(at.starts, at.ends, strict=True))
+    base = runs(at.starts, at.ends, y)
     parts: list[Markup] = [tag("path", d=base, class_="member thin")]
+    texts: list[Markup] = []
     shown = 0
     for action in acting:
         if isinstance(action, DistributedForce) and any(action.transverse):
-            parts += _distributed(action, index_of[action.member], at, largest, units)
+            *drawn, text = _distributed(action, index_of[action.member], at, largest, units)
         elif isinstance(action, PointForce) and action.transverse:
-            parts += _point(action, at.at(index_of[action.member], action.position), units)
+            *drawn, text = _point(action, at.at(index_of[action.member], action.position), units)
         elif isinstance(action, PointMoment):
-            parts += _moment(action, at.at(index_of[action.member], action.position), units)
+            *drawn, text = _moment(action, at.at(index_of[action.member], action.position), units)
         else:
             continue
+        parts += drawn
+        texts.append(text)
         shown += 1
     if not shown:
         return None
+    parts.append(tag("g", texts, class_="value"))
     return _figure(f"Actions of case {case}", parts, _LOAD + 50.0)
 
 
@@ -145,8 +149,13 @@ def _distributed(
         (at.at(index, s), base - _LOAD * abs(action.transverse_at(s)) / (largest or 1.0))
         for s in places
     ]
-    outline = "".join(f"L{x:.1f},{y:.1f}" for x, y in points)
-    path = f"M{points[0][0]:.1f},{base:g}{outline}V{base:g}Z"
+    path = f"M{pixels(points[0][0])},{base:g}"
+    last = base
+    for i, (x, y) in enumerate(points):
+        level, up = pixels(y) == pixels(last), i == 0
+        path += f"V{pixels(y)}" if up else f"H{pixels(x)}" if level else f"L{pixels(x)},{pixels(y)}"
+        last = y
+    path += f"V{base:g}Z"
     ends = [action.transverse_at(action.start), action.transverse_at(action.end)]
     same = abs(ends[0] - ends[1]) <= 1e-9 * max(map(abs, ends))
     text = units.number(ends[0], "line load")
@@ -157,7 +166,7 @@ def _distributed(
     height = (top + base) / 2.0 + 4.0 if base - top > 16.0 else top - 3.0
     return [
         tag("path", d=path, class_="load"),
-        tag("text", f"{text} {units.symbol('line load')}", x=middle, y=height, class_="value"),
+        tag("text", f"{text} {units.symbol('line load')}", x=middle, y=height),
     ]
 
 
@@ -170,8 +179,7 @@ def _point(action: PointForce, x: float, units: DisplayUnits) -> list[Markup]:
     return [
         tag("line", x1=x, y1=tail, x2=x, y2=tip, class_="force"),
         tag("path", d=f"M{x:.1f},{tip:.1f} l-3.5,{head:g} h7 Z", class_="force-head"),
-        tag("text", units.text(abs(action.transverse), "force"), x=x, y=high - 3.0,
-            class_="value"),
+        tag("text", units.text(abs(action.transverse), "force"), x=x, y=high - 3.0),
     ]  # fmt: skip
 
 
@@ -181,5 +189,5 @@ def _moment(action: PointMoment, x: float, units: DisplayUnits) -> list[Markup]:
     return [
         tag("path", d=f"M{x - 8:.1f},{base:.1f} A8,8 0 1 {sweep} {x + 8:.1f},{base:.1f}",
             class_="couple"),
-        tag("text", units.text(action.moment, "moment"), x=x, y=base - 14.0, class_="value"),
+        tag("text", units.text(action.moment, "moment"), x=x, y=base - 14.0),
     ]  # fmt: skip

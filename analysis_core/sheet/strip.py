@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from analysis_core.model import Line, Member
@@ -48,3 +49,19 @@ def strip(line: Line) -> Strip:
         starts.append(x)
         x += scale * member.length
     return Strip(tuple(members), tuple(starts), scale)
+
+
+def pixels(value: float) -> str:
+    """Return a place in pixels as text, to a tenth."""
+    text = f"{value:.1f}".removesuffix(".0")
+    return "0" if text == "-0" else text
+
+
+def runs(starts: Sequence[float], ends: Sequence[float], y: float) -> str:
+    """Return the path of a level line over members; what follows without a gap is one stroke."""
+    path, last = "", ""
+    for a, b in zip(starts, ends, strict=True):
+        if pixels(a) != last:
+            path += f"{f'H{last}' if last else ''}M{pixels(a)},{pixels(y)}"
+        last = pixels(b)
+    return f"{path}H{last}" if last else path

@@ -19,9 +19,11 @@ def table(
     texts: Sequence[int] = (0,),
     class_: str = "",
 ) -> Markup:
-    """Return a table; columns in ``texts`` are set left, the others are numbers, set right."""
+    """Return a table; columns in ``texts`` are set left, the others are numbers, set right.
 
-    top = [tag("tr", [tag("th", cell, scope="col") for cell in head])]
+    Heads of columns need no scope: a row of nothing but heads has it by the rules of HTML.
+    """
+    top = [tag("tr", [tag("th", cell) for cell in head])]
     if any(units):
         top.append(tag("tr", [tag("td", cell) for cell in units], class_="units"))
     body = Markup("".join([table_row(row) for row in rows]))

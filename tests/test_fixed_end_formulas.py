@@ -1,0 +1,57 @@
+"""Formulas of fixed-end moments as the sheet prints them, against integration by quadrature."""
+
+import re
+
+import numpy as np
+import pytest
+
+from analysis_core.calculation.fixed_end_rows import fixed_end_rows
+from analysis_core.model import DistributedForce, Joint, Line, Member, Piece
+from analysis_core.units import display_units
+
+METRIC = display_units("metric", {})
+LENGTH = 6.4
+
+
+def row(action):
+    joints = (Joint(0, 0.0, 0.0, (0.0, 0.0, 0.0)), Joint(1, LENGTH, 0.0, (LENGTH, 0.0, 0.0)))
+    member = Member(0, 0, 1, (Piece(LENGTH, (1e7,)),))
+    ((_, _, formula, start, end),) = fixed_end_rows(Line("L", joints, (member,), (action,)), METRIC)
+    return formula, float(start), float(end)
+
+
+def integrated(low, high, w):
+    """Moments of both ends held, by Gauss quadrature of the influence lines, kN·m."""
+    points, weights = np.polynomial.legendre.leggauss(8)
+    s = low + (points + 1) / 2 * (high - low)
+    part = weights * (high - low) / 2 * w(s) / 1e3
+    return (-float((part * s * (LENGTH - s) ** 2).sum() / LENGTH**2),
+            float((part * s**2 * (LENGTH - s)).sum() / LENGTH**2))  # fmt: skip
+
+
+def test_a_uniform_load_on_a_part_by_its_closed_form():
+    formula, start, end = row(DistributedForce("G", 0, 1.1, 4.9, (7.3e3,)))
+    assert (start, end) == pytest.approx(integrated(1.1, 4.9, lambda s: 7.3e3 + 0 * s), abs=0.006)
+    a, b, span = (float(n) for n in re.findall(r"(\d+\.\d{3})", formula))
+
+    def first(s):
+        return s**2 * (6 * span**2 - 8 * span * s + 3 * s**2)
+
+    def last(s):
+        return s**3 * (4 * span - 3 * s)
+
+    assert "s² (6 L² - 8 L s + 3 s²)" in formula
+    assert "s³ (4 L - 3 s)" in formula
+    assert -7.3 / 12 / span**2 * (first(b) - first(a)) == pytest.approx(start, abs=0.006)
+    assert 7.3 / 12 / span**2 * (last(b) - last(a)) == pytest.approx(end, abs=0.006)
+
+
+def test_a_load_that_grows_along_the_member_by_its_closed_form():
+    formula, start, end = row(DistributedForce("G", 0, 0.0, LENGTH, (2e3, 1.5e3)))
+    assert (start, end) == pytest.approx(
+        integrated(0.0, LENGTH, lambda s: 2e3 + 1.5e3 * s), abs=0.006
+    )
+    w1, w2, span = (float(n) for n in re.findall(r"(\d+\.\d+)", formula))
+    assert (w1, w2) == pytest.approx((2.0, 2.0 + 1.5 * LENGTH), abs=0.006)
+    assert -(3 * w1 + 2 * w2) * span**2 / 60 == pytest.approx(start, abs=0.02)
+    assert (2 * w1 + 3 * w2) * span**2 / 60 == pytest.approx(end, abs=0.02)
