@@ -166,3 +166,12 @@ def test_a_size_that_cannot_be_is_refused_not_passed_over(text, message):
         parse(text)
 
     assert message in str(caught.value)
+
+
+def test_a_text_with_merge_keys_says_the_same_twice():
+    from analysis_core.job.yaml_text import read_yaml
+
+    # Constructing writes what is merged into the nodes; kept nodes would state 'b' twice.
+    text = "display: {<<: {b: 1, c: 3}, b: 2}\n"
+
+    assert read_yaml(text) == read_yaml(text) == {"display": {"b": 2, "c": 3}}

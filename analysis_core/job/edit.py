@@ -8,13 +8,12 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from functools import lru_cache
 from typing import Any
 
 import yaml
 
 from analysis_core.errors import JobError
-from analysis_core.job.yaml_text import JobLoader, read_yaml
+from analysis_core.job.yaml_text import JobLoader, composed, read_yaml
 
 Data = dict[str, Any]
 
@@ -141,17 +140,12 @@ def _flow(value: object) -> str:
 
 def _data(text: str) -> Data:
     """Return the sections; a mapping of the caller's own, whose values are not to be changed."""
-    data = _plain(text)
+    data = read_yaml(text)
     if data is None:
         return {}
     if not isinstance(data, dict):
         raise JobError("The job file is not a mapping of sections; correct it in a text editor.")
     return dict(data)
-
-
-@lru_cache(maxsize=4)  # a decision asks several times about the same two texts
-def _plain(text: str) -> Any:
-    return read_yaml(text)
 
 
 def _checked(text: str, wanted: Data) -> str:
@@ -168,7 +162,7 @@ def _checked(text: str, wanted: Data) -> str:
 
 
 def _root(text: str) -> yaml.MappingNode | None:
-    node = yaml.compose(text, Loader=JobLoader)
+    node = composed(text)
     return node if isinstance(node, yaml.MappingNode) else None
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from functools import lru_cache
 from importlib import resources
 from pathlib import Path
 from typing import Any
@@ -30,11 +31,31 @@ def text_of(path: Path, what: str) -> str:
 def read_yaml(text: str) -> Any:
     """Return the plain data of a job file's text, unchecked.  Raises JobError."""
     try:
-        return yaml.load(text, Loader=JobLoader)
+        node = composed(text)
+        return None if node is None else JobLoader("").construct_document(node)
     except yaml.YAMLError as error:
         raise JobError(f"It is not YAML: {' '.join(str(error).split())}.") from None
     except RecursionError:
         raise JobError("It is nested too deeply; a job file has a few levels.") from None
+
+
+def composed(text: str) -> yaml.Node | None:
+    """Return the nodes of a job file's text, with their places; they are not to be changed.
+
+    Raises yaml.YAMLError, JobError and RecursionError.
+    """
+    # Constructing works merge keys into their nodes; such nodes serve once.
+    return _compose(text) if "<<" in text else _composed(text)
+
+
+@lru_cache(maxsize=4)  # a decision asks several times about the same two texts
+def _composed(text: str) -> yaml.Node | None:
+    return _compose(text)
+
+
+def _compose(text: str) -> yaml.Node | None:
+    node: yaml.Node | None = JobLoader(text).get_single_node()
+    return node
 
 
 def schema() -> dict[str, Any]:
