@@ -67,7 +67,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         meetings.let_carry(physical, table, settings.tolerances, log)
         let_lean(scheme, settings.tolerances, log)
         explain_free_ends(physical, log)
-        let_columns_stand(physical, settings.tolerances, log)
+        let_columns_stand(physical, table, settings.tolerances, log)
         if settings.analysis.spans == "face":
             measure_clear(scheme.drafts, log)
         if settings.analysis.columns_as_legs:

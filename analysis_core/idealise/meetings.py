@@ -17,15 +17,13 @@ from analysis_core.idealise.joints import joint_at, member_at
 from analysis_core.idealise.log import Log
 from analysis_core.idealise.physical import PhysicalScheme
 from analysis_core.idealise.properties import PropertyTable
-from analysis_core.idealise.scheme import Rest, Scheme, body_of, stiffness_at
+from analysis_core.idealise.scheme import Rest, Scheme, body_of, stiffness_at, yields_like
 from analysis_core.idealise.spans import Chain, Seating, outer_end, seat_key
 from analysis_core.model import FREE, RIGID
 from analysis_core.settings import Tolerances
 
 # Bearings nearer to each other than this are one (m).
 _APART = 0.05
-# A beam this many times as stiff as what lies on it is near enough to a rigid support.
-_FIRM = 10.0
 
 
 @dataclass(slots=True)
@@ -212,24 +210,19 @@ def _report_yielding(
     """Warn where a line that stands anyway lies on one that yields about as much as itself."""
     firm = [s.run for s in chain.seatings if s.best.kind not in ("beam", "beam below")]
     stiffness = {touch.body: touch.stiffness for touch in contact.touches}
-    own, below = stiffness[carried.mark], stiffness[carrier.mark]
-    if len(firm) < 2 or max(firm) - min(firm) < _APART or below > _FIRM * own:
+    soft = yields_like(stiffness[carrier.mark], stiffness[carried.mark])
+    if len(firm) < 2 or max(firm) - min(firm) < _APART or not soft:
         return
     log.add(
         "warning",
         "grillage-crossing",
         f"Line {carried.mark} lies on line {carrier.mark}, but stands on other bearings as well. "
-        f"{carrier.mark} is taken as a rigid support although it is only {_times(below, own)} as "
-        f"stiff against a force there, so that in truth {carried.mark} bends more and hands down "
-        f"less. State the support in the job file as free or as a spring (supports: on, at) to see "
-        f"how much this matters.",
+        f"{carrier.mark} {soft}, so that in truth {carried.mark} bends more and hands down less. "
+        f"State the support in the job file as free or as a spring (supports: on, at) to see how "
+        f"much this matters.",
         (*carried.elements, *carrier.elements),
         carried.mark,
     )
-
-
-def _times(below: float, own: float) -> str:
-    return f"{below / own:.2g} times" if own > 0.0 else "about"
 
 
 def _joint(carried: Draft, chain: Chain, side: _Side, key: str) -> DraftJoint:

@@ -7,10 +7,15 @@ from dataclasses import dataclass, field
 
 from analysis_core.findings import listed
 from analysis_core.idealise.carrying import Body, Contact, standing
-from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.draft import Bar, Draft, DraftJoint
 from analysis_core.idealise.log import Log
 from analysis_core.idealise.properties import PropertyTable
 from analysis_core.model import FREE
+
+# Supports nearer to each other than this are one (m).
+_APART = 0.05
+# What is this many times as stiff as a line that rests on it is near enough to a rigid support.
+_FIRM = 10.0
 
 
 @dataclass(slots=True)
@@ -60,6 +65,34 @@ def stiffness_at(draft: Draft, x: float, element: str, table: PropertyTable) -> 
         return rigidity * (a + b) / (a * a * b * b)
     ends = [j.x for j in draft.joints]
     return rigidity / max(a, b, (max(ends) - min(ends)) / 2.0, 1e-3) ** 3
+
+
+def yields_like(below: float, own: float) -> str:
+    """Say how soft a carrier is (N/m) for a line that stands without it, "" where it is firm."""
+    if below > _FIRM * own:
+        return ""
+    times = f"only {below / own:.2g} times as stiff" if own > 0.0 else "of unknown stiffness"
+    return f"is taken as a rigid support although it is {times} against a force there"
+
+
+def stands_without(draft: Draft, joint: DraftJoint) -> bool:
+    """Whether two other places hold a draft up."""
+    others = [j.x for j in draft.joints if j.vertical > FREE and j is not joint]
+    return len(others) > 1 and max(others) - min(others) > _APART
+
+
+def x_of(draft: Draft, member: str, station: float) -> float:
+    """Return where a station of a member lies along a draft."""
+    bars = [bar for bar in draft.bars if bar.member.global_id == member]
+
+    def beyond(bar: Bar) -> float:
+        low, high = sorted((bar.station_start, bar.station_end))
+        return max(low - station, station - high)
+
+    bar = min(bars, key=beyond)
+    share = (station - bar.station_start) / (bar.station_end - bar.station_start)
+    a, b = draft.joints[bar.start].x, draft.joints[bar.end].x
+    return a + share * (b - a)
 
 
 def fallen_of(drafts: Sequence[Draft]) -> frozenset[int]:

@@ -6,12 +6,13 @@ from analysis_core.building import Carrier
 from analysis_core.idealise.beams import Beam
 from analysis_core.idealise.bearing_search import boxes_of_beams, boxes_of_carriers
 from analysis_core.idealise.bearings import kind_of
-from analysis_core.idealise.draft import Draft
+from analysis_core.idealise.draft import Draft, DraftJoint
 from analysis_core.idealise.log import Log, named
 from analysis_core.idealise.pairs import Floats, overlapping
 from analysis_core.idealise.physical import PhysicalScheme
 from analysis_core.idealise.plan import centre, gap_to
-from analysis_core.idealise.scheme import Rest
+from analysis_core.idealise.properties import PropertyTable
+from analysis_core.idealise.scheme import Rest, stands_without, stiffness_at, x_of, yields_like
 from analysis_core.model import RIGID
 from analysis_core.settings import Tolerances
 
@@ -19,7 +20,9 @@ from analysis_core.settings import Tolerances
 _BETWEEN = 1.5
 
 
-def let_columns_stand(physical: PhysicalScheme, tolerances: Tolerances, log: Log) -> None:
+def let_columns_stand(
+    physical: PhysicalScheme, table: PropertyTable, tolerances: Tolerances, log: Log
+) -> None:
     """Hand the reactions that reach a column which stands on a beam to that beam's line.
 
     A column is followed down, storey by storey, through the columns, walls and footings below
@@ -53,6 +56,7 @@ def let_columns_stand(physical: PhysicalScheme, tolerances: Tolerances, log: Log
             )
             joint.reason += f"; the column stands on beam {beam} of line {carrier.mark}"
             _report(draft, carrier, column, beam, log)
+            _report_yielding(draft, joint, physical.scheme.rests[-1], table, log)
 
 
 def _report(draft: Draft, carrier: Draft, column: Carrier, beam: str, log: Log) -> None:
@@ -63,6 +67,30 @@ def _report(draft: Draft, carrier: Draft, column: Carrier, beam: str, log: Log) 
         f"{draft.mark} hands to it acts there. Its own weight is not included.",
         (column.global_id, beam),
         carrier.mark,
+    )
+
+
+def _report_yielding(
+    draft: Draft, joint: DraftJoint, rest: Rest, table: PropertyTable, log: Log
+) -> None:
+    """Warn where a line that stands anyway is propped from a beam that yields as much as itself."""
+    carrier = rest.carrier
+    number = next(n for n, other in enumerate(draft.joints) if other is joint)
+    bar = next(bar for bar in draft.bars if number in (bar.start, bar.end))
+    own = stiffness_at(draft, joint.x, bar.member.global_id, table)
+    place = x_of(carrier, rest.member, rest.station)
+    soft = yields_like(stiffness_at(carrier, place, rest.member, table), own)
+    if not soft or not stands_without(draft, joint):
+        return
+    log.add(
+        "warning",
+        "grillage-crossing",
+        f"Line {draft.mark} is propped by a column on line {carrier.mark}, but stands on other "
+        f"bearings as well. {carrier.mark} {soft}, so that in truth {draft.mark} bends more and "
+        f"hands down less. State the support in the job file as free or as a spring (supports: "
+        f"on, at) to see how much this matters.",
+        (*draft.elements, *carrier.elements),
+        draft.mark,
     )
 
 

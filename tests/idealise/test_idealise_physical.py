@@ -353,6 +353,28 @@ def test_a_column_on_a_beam_hands_the_upper_line_down():
     assert finding(found, "column-on-beam").elements == ("planted", "low")
 
 
+@pytest.mark.parametrize("redundant", [True, False])
+def test_a_line_propped_from_a_soft_beam_is_warned_of(redundant):
+    """At a third of 6 m both beams resist 3 EI L / (a² b²): once as stiff.
+
+    Without its column at x = 6 the upper beam cannot do without the prop.
+    """
+    places = (0.0, 6.0) if redundant else (0.0,)
+    carriers = [column(f"L{x}", x, 0.0, 0.0, Z - 0.2) for x in (0.0, 6.0)]
+    carriers += [column(f"U{x}", x, 0.0, Z + 0.2, 6.0) for x in places]
+    carriers += [column("prop", 2.0, 0.0, Z + 0.2, 6.0)]
+    beams = [
+        beam("low", (0.0, 0.0, Z), (6.0, 0.0, Z)),
+        beam("up", (0.0, 0.0, 6.2), (6.0, 0.0, 6.2)),
+    ]
+    found = idealise(house(beams, carriers), Settings())
+
+    assert len(found.transfers) == 1
+    assert ("grillage-crossing" in slugs(found)) == redundant
+    if redundant:
+        assert "only 1 times as stiff" in finding(found, "grillage-crossing").message
+
+
 def test_a_long_overhang_names_what_is_nearest():
     carriers = [column(f"C{i}", x, 0.0, 0.0, Z - 0.2) for i, x in enumerate((0.0, 4.0))]
     carriers.append(column("near", 7.6, 0.0, 0.0, Z - 0.2))
