@@ -76,6 +76,13 @@ class Section:
     dimensions: tuple[tuple[str, float], ...] = ()
     source: str = ""
 
+    @property
+    def title(self) -> str:
+        """Its name, else its shape and size."""
+        if self.name or not (self.width and self.depth):
+            return self.name or self.shape
+        return f"{self.shape} {1e3 * self.width:.0f} x {1e3 * self.depth:.0f} mm".strip()
+
 
 @dataclass(frozen=True, slots=True)
 class Material:

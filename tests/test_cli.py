@@ -32,6 +32,7 @@ def test_survey_lists_lines_bearings_with_reasons_and_findings(run):
     assert (status, err) == (0, "")
     assert "bears on column 'C-A1'" in out
     assert "R 300x500, Concrete C30/37" in out
+    assert "  B1-AB [3qvn7zaWfMcPViGGe89CIw]" in out  # its name, as the drawing calls it
     assert "assumed-continuous" in out
     assert "licensed engineer" in out
 

@@ -59,7 +59,7 @@ def survey_text(
     """
     parts = [_headline(model, file, schema), counts_text(counts or {})]
     wanted = [line for line in model.lines if not only or line.mark in only]
-    parts += [_survey_line(line, units) for line in wanted]
+    parts += [_survey_line(line, model.names, units) for line in wanted]
     known = states or {}
     parts.append(_posted_text({x.mark: known[x.mark] for x in wanted if x.mark in known}))
     parts.append(_cases_text(model))
@@ -148,13 +148,13 @@ def _headline(model: LineModel, file: str, schema: str) -> str:
     return f"{title}{safe(file)} ({schema}): {kinds}, {spans} spans."
 
 
-def _survey_line(line: Line, units: DisplayUnits) -> str:
+def _survey_line(line: Line, names: Mapping[str, str], units: DisplayUnits) -> str:
     spans = [m for m in line.members if m.role == "span"]
     lengths = " + ".join(units.number(m.length, "length") for m in spans)
     storey = f", {safe(line.storey)}" if line.storey else ""
     kind = "frame" if line.kind == "frame" else "line"
     rows = [f"{safe(line.mark)}  {kind}{storey}: {lengths} {units.symbol('length')}"]
-    rows += [_survey_member(m, units) for m in line.members]
+    rows += [_survey_member(m, names, units) for m in line.members]
     rows += [_survey_joint(j, units) for j in line.joints if j.support is not None or j.reason]
     counts = Counter(action.case for action in line.actions)
     if counts:
@@ -162,9 +162,9 @@ def _survey_line(line: Line, units: DisplayUnits) -> str:
     return "\n".join(rows)
 
 
-def _survey_member(member: Member, units: DisplayUnits) -> str:
+def _survey_member(member: Member, names: Mapping[str, str], units: DisplayUnits) -> str:
     what = f"span {member.span}" if member.role == "span" and member.span else member.role
-    section = safe(member.section.name) if member.section else "section by stiffness"
+    section = safe(member.section.title) if member.section else "section by stiffness"
     material = safe(member.material.name) if member.material else "material not named"
     ends = [
         f"{end} {'released' if spring == 0.0 else 'on a spring'}"
@@ -173,9 +173,10 @@ def _survey_member(member: Member, units: DisplayUnits) -> str:
     ]
     tail = f", {', '.join(ends)}" if ends else ""
     rigidity = units.text(member.flexural_rigidity, "flexural rigidity")
+    name = safe(names.get(member.element, ""))
     return (
         f"  {what}: {units.text(member.length, 'length')}, {section}, {material}, "
-        f"EI {rigidity}{tail}  [{safe(member.element)}]"
+        f"EI {rigidity}{tail}  {name and name + ' '}[{safe(member.element)}]"
     )
 
 

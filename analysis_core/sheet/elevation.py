@@ -84,7 +84,7 @@ def _figure(title: str, parts: list[Markup], height: float) -> Markup:
 def _texts(member: Member, x: float, room: float, units: DisplayUnits) -> list[Markup]:
     name = f"{member.span}" if member.role == "span" and member.span else f"leg {member.id}"
     length = units.text(member.length, "length")
-    section = member.section.name if member.section else ""
+    section = member.section.title if member.section else ""
     text = f"{name}:  {length}"
     if room < _LETTER * len(text):
         text = name

@@ -74,7 +74,7 @@ def _member(line: Line, member: Member, view: _View, units: DisplayUnits) -> lis
     where = f"translate({(x1 + x2) / 2.0:.1f},{(y1 + y2) / 2.0:.1f}) rotate({angle:.1f})"
     text = f"{name}:  {units.text(member.length, 'length')}" if long > _SHORT else name
     labels = [tag("text", text, x=0, y=-6.0)]
-    section = member.section.name if member.section else ""
+    section = member.section.title if member.section else ""
     if section and long > 6.0 * len(section):
         labels.append(tag("text", section, x=0, y=13.0, class_="section-name"))
     return [*parts, tag("g", labels, transform=where)]

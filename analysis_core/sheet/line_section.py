@@ -66,7 +66,7 @@ def _members(line: Line, names: Mapping[str, str], units: DisplayUnits) -> Marku
             names.get(m.element) or m.element or "–",
             f"{m.start} to {m.end}",
             units.number(m.length, "length"),
-            m.section.name if m.section else "–",
+            m.section.title if m.section else "–",
             m.material.name if m.material else "–",
             units.number(m.flexural_rigidity, "flexural rigidity"),
             _ends(m),
