@@ -7,6 +7,7 @@ from dataclasses import replace
 
 from analysis_core.calculation.assumptions import assumptions_part
 from analysis_core.calculation.fixed_end_rows import fixed_end_rows
+from analysis_core.checking.direct_bearing import direct_bearing
 from analysis_core.checking.members import DEFLECTION_LIMIT, MemberChecks, check_line
 from analysis_core.distribution.record import distribute
 from analysis_core.effects.states import State, state_line
@@ -33,8 +34,9 @@ _MOST, _FEW = 4, 2
 
 def calculation_sheet(outcome: Outcome, settings: Settings, units: DisplayUnits, date: str) -> str:
     """Return the whole sheet as HTML text."""
+    bearing = direct_bearing(outcome.model)
     found = {
-        result.line.mark: check_line(result, outcome.model, settings)
+        result.line.mark: check_line(result, outcome.model, settings, bearing)
         for result in outcome.lines
         if result.status == "balanced"
     }

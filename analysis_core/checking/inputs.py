@@ -173,11 +173,17 @@ def by_duration(
 
 
 def designs(
-    result: LineResult, fields: LineFields, model: LineModel, settings: Settings
+    result: LineResult,
+    fields: LineFields,
+    model: LineModel,
+    settings: Settings,
+    transfers: Sequence[Transfer],
 ) -> list[MemberDesign | None]:
-    """Return each member ready to be checked; None where section or material are missing."""
+    """Return each member ready to be checked; None where section or material are missing.
+
+    ``transfers``: those of lines that bear directly on this one.
+    """
     line, strength = result.line, fields.effects.strength
-    transfers = [t for t in model.transfers if t.to_line == line.mark]
     spans = {span.number: span for span in spans_of(line)}
     out: list[MemberDesign | None] = []
     for member, found in zip(line.members, strength.members, strict=True):
@@ -196,7 +202,7 @@ def designs(
                 cantilever=span.cantilever if span else bool(stretch.loose),
                 continuous_ends=continuous_ends(line, span) if span else 0,
                 span=span.length if span else stretch.length,
-                bearings=_bearings(line, member, fields, transfers),
+                bearings=_bearings(line, member, fields),
                 redistribution=fields.effects.shifts.get(member.id),
             )
         )  # fmt: skip
@@ -313,9 +319,7 @@ def _with_extremes(fields: LineFields, row: int, member: int) -> tuple[Floats, F
     return x, moment, shear
 
 
-def _bearings(
-    line: Line, member: Member, fields: LineFields, transfers: Sequence[Transfer]
-) -> tuple[Bearing, ...]:
+def _bearings(line: Line, member: Member, fields: LineFields) -> tuple[Bearing, ...]:
     """The bearings at the member's ends, each counted with one member alone."""
     if not fields.bearings:
         return ()

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 
+from analysis_core.checking.direct_bearing import ByLine, direct_bearing
 from analysis_core.checking.inputs import (
     designs,
     elastic_effects,
@@ -75,26 +76,37 @@ class MemberChecks:
 def check_lines(outcome: Outcome, settings: Settings) -> dict[str, tuple[MemberChecks, ...]]:
     """Return the checks of every balanced line by its mark.  Raises JobError."""
     _known_figures(settings)
+    bearing = direct_bearing(outcome.model)
     return {
-        result.line.mark: tuple(check_line(result, outcome.model, settings))
+        result.line.mark: tuple(check_line(result, outcome.model, settings, bearing))
         for result in outcome.lines
         if result.status == "balanced"
     }
 
 
-def check_line(result: LineResult, model: LineModel, settings: Settings) -> list[MemberChecks]:
-    """Return the checks of the members of one line."""
+def check_line(
+    result: LineResult, model: LineModel, settings: Settings, bearing: ByLine | None = None
+) -> list[MemberChecks]:
+    """Return the checks of the members of one line.
+
+    ``bearing``: ``direct_bearing`` of the model, where it is at hand already.
+    """
     if "strength" not in result.envelopes or result.parts is None or result.detail is None:
         return []
+    on_it = (direct_bearing(model) if bearing is None else bearing).get(result.line.mark, ())
     codes = [_code(member, result, settings) for member in result.line.members]
     plain = line_fields(result, elastic_effects(result))
     shifted = redistributed_effects(result)
-    moved = designs(result, line_fields(result, shifted), model, settings) if shifted else None
+    moved = None
+    if shifted is not None:
+        moved = designs(result, line_fields(result, shifted), model, settings, on_it)
     timber = timber_fields(result, model, settings) if _TIMBER in codes else plain
     sags = timber_sags(result, _creep(settings)) if _TIMBER in codes else None
     factored = _factored(result)
-    prepared = designs(result, plain, model, settings)
-    of_timber = prepared if timber is plain else designs(result, timber, model, settings)
+    prepared = designs(result, plain, model, settings, on_it)
+    of_timber = prepared
+    if timber is not plain:
+        of_timber = designs(result, timber, model, settings, on_it)
     out = []
     for member, code in zip(result.line.members, codes, strict=True):
         design = (of_timber if code == _TIMBER else prepared)[member.id]

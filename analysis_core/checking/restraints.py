@@ -8,9 +8,11 @@ from dataclasses import dataclass
 
 from analysis_core.checks.design import Restraints
 from analysis_core.effects.deflection_limits import Span
+from analysis_core.findings import listed
 from analysis_core.model import Line, LineModel, Member, Transfer
 from analysis_core.settings import RestraintSetting, Settings
 from analysis_core.solving.line_selection import chooses
+from analysis_core.units import DisplayUnits, display_units
 
 _STRAIGHT = 1e-3  # sine of the angle up to which members run straight on
 
@@ -95,19 +97,27 @@ def restraints(
     """Return where the flanges of a member are held sideways, with the reason.
 
     Both flanges where the stretch bears, the top flange where another line bears on it or a slab
-    lies on the member, and what the job file states.  ``transfers``: those onto this line.
+    lies on the member, and what the job file states.  ``transfers``: those of lines that bear
+    directly on this one.
     """
     top, bottom = set(stretch.held), set(stretch.held)
-    reasons = [_at_ends(stretch, member)]
+    units = display_units(settings.display.system, settings.display.units)
+    reasons = [_at_ends(stretch, member, units)]
+    bearing: dict[str, list[str]] = {}
     for run in stretch.runs:
         upper = top if run.sign > 0 else bottom
         for transfer in transfers:
             if transfer.member == run.member.id:
                 upper.add(run.at(transfer.position))
                 if run.member is member:
-                    reasons.append(
-                        f"top flange at {transfer.position:.2f} m, where {transfer.from_line} bears"
-                    )
+                    place = units.text(transfer.position, "length")
+                    marks = bearing.setdefault(place, [])
+                    if transfer.from_line not in marks:
+                        marks.append(transfer.from_line)
+    reasons += [
+        f"top flange at {place}, where {listed(marks)} {'bears' if len(marks) == 1 else 'bear'}"
+        for place, marks in bearing.items()
+    ]
     slab = model.held_by.get(member.element, "")
     top_all, bottom_all = bool(slab), False
     if slab:
@@ -162,12 +172,12 @@ def _straight(line: Line, one: Member, other: Member) -> bool:
     return abs(ax * bz - az * bx) <= _STRAIGHT
 
 
-def _at_ends(stretch: Stretch, member: Member) -> str:
+def _at_ends(stretch: Stretch, member: Member, units: DisplayUnits) -> str:
     places = [p for p in stretch.held if -1e-9 <= p <= member.length + 1e-9]
     if len(places) == 2:
         return "both flanges at the ends of the member"
-    held = ", ".join(f"{p:.2f} m" for p in stretch.held) or "nowhere"
-    free = ", ".join(f"{p:.2f} m" for p in stretch.loose)
+    held = listed([units.text(p, "length") for p in stretch.held]) or "nowhere"
+    free = listed([units.text(p, "length") for p in stretch.loose])
     return f"both flanges at {held}" + (f"; nothing holds it at {free}" if free else "")
 
 

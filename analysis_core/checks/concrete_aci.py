@@ -223,9 +223,13 @@ def _bending(
     in_tension = shape.compressed_flange(top=not bottom)[0]
     if design.cantilever and in_tension > bw:  # statically determinate, flange in tension
         width = min(in_tension, 2.0 * bw)
+    stress = max(3.0 * root, 200.0) * PSI
+    words = f"max(3 √f'c, 200) psi, f'c = {fc / PSI:.0f} psi"
+    words += "; twice the web or the flange, in tension" if width > bw else ""
     least = w.step(
-        "A_s,min", "max(3 √f'c, 200) b_w d / f_y",
-        max(3.0 * root, 200.0) * PSI * width * d / f["f_y"], "area", "9.6.1.2",
+        "A_s,min", "{σ} {b_w} {d} / {f_y}", stress * width * d / f["f_y"], "area", "9.6.1.2",
+        note=words, σ=(stress, "stress"), b_w=(width, "section length"),
+        d=(d, "section length"), f_y=(f["f_y"], "stress"),
     )  # fmt: skip
     needed = w.step("A_s", "", max(found.tension, least), "area", "",
                     note="tension reinforcement to be put in: the larger")  # fmt: skip

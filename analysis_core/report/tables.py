@@ -273,7 +273,8 @@ def _deflection_cells(
     offsets = {member.id: at for member, at in members}
     down = abs(span.down.value) >= abs(span.up.value)
     worst, member = (span.down, span.down_member) if down else (span.up, span.up_member)
-    ratio = f"L/{span.span.length / abs(worst.value):.0f}" if abs(worst.value) > 1e-9 else "-"
+    share = span.span.length / abs(worst.value) if abs(worst.value) > 1e-9 else math.inf
+    ratio = f"L/{share:.0f}" if share < 1e4 else "-"
     use = "-" if span.utilisation is None else f"{span.utilisation:.2f}"
     place = units.number(offsets[member] + worst.x, "length")
     return [units.number(worst.value, "deflection"), place, ratio, use]

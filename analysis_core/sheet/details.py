@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 
 from analysis_core.effects.deflection_limits import SpanDeflection
@@ -19,7 +20,8 @@ def deflections(found: Sequence[SpanDeflection], units: DisplayUnits) -> Markup:
     for span in found:
         down = abs(span.down.value) >= abs(span.up.value)
         worst = span.down if down else span.up
-        ratio = f"L/{span.span.length / abs(worst.value):.0f}" if abs(worst.value) > 1e-9 else "–"
+        share = span.span.length / abs(worst.value) if abs(worst.value) > 1e-9 else math.inf
+        ratio = f"L/{share:.0f}" if share < 1e4 else "–"  # beyond, nothing moves that counts
         limit = "–" if span.limit is None else units.number(span.limit, "deflection")
         rows.append((
             f"span {span.span.number}{' (cantilever)' if span.span.cantilever else ''}",

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import re
 from functools import lru_cache
 
@@ -53,15 +54,20 @@ def bounded(step: Step) -> bool:
 
 
 def value_text(value: float, quantity: str, units: DisplayUnits) -> str:
-    """Return a value in display units, with as many digits as a check needs: three that count."""
+    """Return a value in display units, with as many digits as a check needs.
+
+    Three digits that count, where two decimals more than usual give them.
+    """
     if quantity:
         text = units.text(value, quantity)
         number, _, symbol = text.partition(" ")
-        digits = sum(c.isdigit() for c in number.lstrip("-0."))
-        precise = f"{units.value(value, quantity):.3g}"
-        if 0 < digits < 3 and "." in number and float(precise) != float(number):
-            return f"{precise} {symbol}"
-        return text
+        usual = len(number.partition(".")[2])
+        shown = units.value(value, quantity)
+        if not usual or not 0.0 < abs(shown) < 100.0:
+            return text
+        needed = 2 - math.floor(math.log10(abs(shown)))
+        precise = f"{shown:.{min(max(needed, usual), usual + 2)}f}".rstrip("0").rstrip(".")
+        return f"{precise} {symbol}" if len(precise) > len(number) else text
     if abs(value - round(value)) < 1e-9 and abs(value) < 1000:
         return f"{value:.0f}".replace("-0", "0")
     return f"{value:.3f}" if abs(value) >= 0.01 else f"{value:.5f}"

@@ -24,7 +24,7 @@ from analysis_core.model import (
     Support,
     Transfer,
 )
-from analysis_core.settings import CheckSettings, Redistribution, RuleSettings, Settings
+from analysis_core.settings import CheckSettings, Display, Redistribution, RuleSettings, Settings
 
 BEARING = Support(vertical=float("inf"))
 CASES = (Case("G", "permanent"), Case("Q", "imposed", "B"), Case("S", "snow"))
@@ -81,19 +81,40 @@ def test_the_tip_of_a_cantilever_is_not_held_and_an_unheld_joint_does_not_stop_b
         assert found[member]["lateral torsional buckling"].demand == pytest.approx(-54e3, rel=0.02)
 
 
+def carried_by(beam, support, **settings):
+    """Checks of a beam that carries L2, whose first joint rests on the element ``support``."""
+    other = line(IPE300, S355, (3.0,), actions=uniform("G", 1e3, (3.0,)))
+    joint = replace(other.joints[0], point=(3.0, 0.0, 3.0), element=support)
+    other = replace(other, mark="L2", elements=("J",), joints=(joint, *other.joints[1:]))
+    model = LineModel((beam, other), CASES, (), (Transfer("L2", 0, "L1", 0, 3.0),))
+    given = Settings(**settings)
+    outcome = pipeline.solve(pipeline.Survey("f", "IFC4", "0" * 64, model, ()), given)
+    (held,) = check_lines(outcome, given)["L1"]
+    return held
+
+
+def test_what_comes_down_a_column_holds_no_flange():
+    beam = line(IPE300, S355, (6.0,), actions=uniform("G", 15e3, (6.0,)))
+    held = carried_by(beam, "a column that stands on it")
+    assert "L2" not in held.restraints
+    lateral = next(c for c in held.checks if c.name == "lateral torsional buckling")
+    assert next(s.value for s in lateral.steps if s.symbol == "L") == 6.0
+
+
+def test_places_of_restraints_are_told_in_display_units():
+    beam = line(IPE300, S355, (6.0,), actions=uniform("G", 15e3, (6.0,)))
+    held = carried_by(beam, "E0", display=Display("us"))
+    assert "top flange at 9.84 ft, where L2 bears" in held.restraints  # 3 m / 0.3048
+
+
 def test_what_bears_on_a_beam_holds_its_top_flange_and_the_reason_is_stated():
     lengths = (6.0,)
     beam = line(IPE300, S355, lengths, actions=uniform("G", 15e3, lengths))
-    other = replace(
-        line(IPE300, S355, (3.0,), actions=uniform("G", 1e3, (3.0,))), mark="L2", elements=()
-    )
-    model = LineModel((beam, other), CASES, (), (Transfer("L2", 0, "L1", 0, 3.0),))
-    outcome = pipeline.solve(pipeline.Survey("f", "IFC4", "0" * 64, model, ()), Settings())
-    (held,) = check_lines(outcome, Settings())["L1"]
+    held = carried_by(beam, "E0")
     _, (plain,), _ = checked(beam)
 
     by_name = {c.name: c for c in held.checks}
-    assert "top flange at 3.00 m, where L2 bears" in held.restraints
+    assert "top flange at 3.000 m, where L2 bears" in held.restraints
     steps = {s.symbol: s.value for s in by_name["lateral torsional buckling"].steps}
     assert steps["L"] == 3.0
     assert (
@@ -243,7 +264,7 @@ def test_a_leg_with_axial_force_is_checked_with_it():
     assert abs(found["bending"].demand) == pytest.approx(20.25e3, rel=1e-9)
     steps = {s.symbol: s.value for s in found["buckling with bending"].steps}
     assert steps["L_cr,y"] == steps["L_cr,z"] == 6.0  # a post that only its foot holds: twice
-    assert "nothing holds it at 3.00 m" in member.restraints
+    assert "nothing holds it at 3.000 m" in member.restraints
 
 
 def test_an_unknown_material_or_one_without_a_check_is_said_so():
