@@ -314,3 +314,19 @@ def test_a_moment_over_a_bearing_has_one_label(text):
     for drawing in re.findall(r"<title>Moment envelope.*?</svg>", text, re.DOTALL):
         labels = re.findall(r"<text x=([\d.]+) y=([\d.]+)[^>]*>(-?[\d.]+)<", drawing)
         assert len(labels) == len(set(labels))
+
+
+def test_the_figures_of_the_checks_stand_with_their_clauses_and_who_settled_them():
+    """Values of EN 1993-1-1, 6.1 and EN 1992-1-1, 2.4.2.4 and annex C, from memory."""
+    checks = replace(JOB.checks, replace={"gamma_M1": 1.1, "cover": 0.035})
+    job = replace(JOB, checks=checks)
+    found = Reader(pipeline.sheet(pipeline.run(MODEL, job), job))
+    at = next(i for i, c in enumerate(found.captions) if "Figures of the checks" in c)
+    rows = {cells[0]: cells[1:] for _, cells in found.tables[at][1]}
+    assert rows["γM0"][0] == "1"
+    assert rows["γM1"][0] == "1.1"
+    assert rows["γM1"][3] == "job file, for 1"
+    assert rows["cover"][0] == "35.0 mm"
+    assert rows["fyk"][0] == "500.0 MPa"
+    assert "6.1(1)" in rows["γM0"][2]
+    assert rows["γc"][3] == "recommended, national"

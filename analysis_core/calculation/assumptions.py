@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
+
+from analysis_core.calculation.check_figures import check_figures
 from analysis_core.model import LineModel, Material, Section
 from analysis_core.results import Outcome
 from analysis_core.settings import Analysis, RuleSettings, Settings, Tolerances
@@ -13,9 +16,16 @@ _JOB, _DEFAULT = "job file", "default"
 
 
 def assumptions_part(
-    outcome: Outcome, settings: Settings, units: DisplayUnits, note: str = ""
+    outcome: Outcome,
+    settings: Settings,
+    units: DisplayUnits,
+    note: str = "",
+    codes: Iterable[str] = (),
 ) -> Markup:
-    """Return the section of assumptions of the sheet, with a note at its end."""
+    """Return the section of assumptions of the sheet, with a note at its end.
+
+    ``codes``: those that members were checked by.
+    """
     members = [m for r in outcome.lines for m in r.line.members]
     materials = dict.fromkeys(m.material for m in members if m.material is not None)
     sections = dict.fromkeys(m.section for m in members if m.section is not None)
@@ -25,14 +35,13 @@ def assumptions_part(
         [_section(section, units) for section in sections],
         units,
         note,
+        check_figures(codes, settings.checks.replace, units),
     )
 
 
 def decisions(model: LineModel, settings: Settings) -> list[tuple[str, str, str]]:
     """Return subject, what was taken, and who settled it."""
     out = [*_analysis(settings.analysis), *_rules(settings.rules), *_tolerances(settings)]
-    for name, value in sorted(settings.checks.replace.items()):
-        out.append((f"Figure {name} of the checks", f"{value:g}", _JOB))
     for kind, code in sorted(settings.checks.codes.items()):
         out.append((f"Checks of {kind}", code, _JOB))
     slabs = len(model.held_by)

@@ -41,6 +41,7 @@ def calculation_sheet(outcome: Outcome, settings: Settings, units: DisplayUnits,
         if result.status == "balanced"
     }
 
+    codes = {each.code for of_line in found.values() for each in of_line}
     many = len(outcome.lines) > _MANY
     seen: dict[Hashable, LineResult] = {}
     told = Told()
@@ -57,7 +58,7 @@ def calculation_sheet(outcome: Outcome, settings: Settings, units: DisplayUnits,
     return sheet(
         outcome, units, title=settings.title, date=date, working=working, checks=checks,
         uses={mark: use for mark, each in found.items() if (use := _largest_use(each))},
-        assumed=assumptions_part(outcome, settings, units, _how_much(many)),
+        assumed=assumptions_part(outcome, settings, units, _how_much(many), codes),
     )  # fmt: skip
 
 

@@ -9,6 +9,7 @@ from analysis_core.findings import Finding
 from analysis_core.results import LineResult, Outcome
 from analysis_core.sheet.anchors import anchor
 from analysis_core.sheet.html import Content, Markup, join, tag
+from analysis_core.sheet.symbols import symbols
 from analysis_core.sheet.table import facts, table
 from analysis_core.units import DisplayUnits
 
@@ -85,8 +86,12 @@ def assumptions(
     sections: Sequence[Sequence[str]],
     units: DisplayUnits,
     note: str = "",
+    figures: Sequence[Sequence[str]] = (),
 ) -> Markup:
-    """Return what was settled for the whole model and by whom, and what members are made of."""
+    """Return what was settled for the whole model and by whom, and what members are made of.
+
+    ``figures``: those that the checks rest on.
+    """
     stress, area = units.symbol("stress"), units.symbol("area")
     inertia, length = units.symbol("inertia"), units.symbol("section length")
     return tag(
@@ -101,8 +106,19 @@ def assumptions(
         table(("Section", "Shape", "Depth", "Width", "A", "I", "I across", "From"),
               ("", "", length, length, area, inertia, inertia, ""), sections,
               caption="Sections", texts=(0, 1, 7)),
+        _figures(figures),
         tag("p", note) if note else "",
         id="assumptions",
+    )  # fmt: skip
+
+
+def _figures(figures: Sequence[Sequence[str]]) -> Markup:
+    if not figures:
+        return Markup("")
+    return table(
+        ("Figure", "Value", "Meaning", "Clause", "Settled by"), ("",) * 5,
+        [(symbols(name), *rest) for name, *rest in figures],
+        caption="Figures of the checks; a job file replaces any of them", texts=(0, 2, 3, 4),
     )  # fmt: skip
 
 
