@@ -9,8 +9,9 @@ import pytest
 from analysis_core import pipeline
 from analysis_core.checking import choosing
 from analysis_core.cli import main
-from analysis_core.job.reader import load
+from analysis_core.job.reader import load, parse, with_section_tables
 from analysis_core.model import DistributedForce
+from analysis_core.settings import Selector
 
 SAMPLES = Path(__file__).resolve().parents[1] / "sample_models"
 MODEL = SAMPLES / "quarry_lane_physical_ifc4.ifc"
@@ -152,3 +153,56 @@ def test_what_has_no_code_is_not_chosen_though_nothing_speaks_against_it(tmp_pat
     (choice,), _ = pipeline.lightest(path, "model", load(JOB), marks=["FF-04"])
     assert choice.chosen == ""
     assert {t.reason.partition(":")[0] for t in choice.tried} == {"not checked"}
+
+
+def test_of_many_lines_each_has_its_say(table):
+    # FF-04 and ROOF-01 have other spans, loads and limits; a common choice suits both.
+    job = load(JOB)
+    known = pipeline.stock(MODEL, job)
+    found = pipeline.survey(MODEL, job)
+    settings = with_section_tables(job, [table])
+    offer = pipeline.offered(known, settings, "job")
+
+    def together(*marks):
+        def solve(model):
+            return pipeline.solve(replace(found, model=model, standing=()), job)
+
+        (choice,) = choosing.choose_lightest(found.model, job, offer.candidates, [marks], solve)
+        return choice
+
+    alone = {mark: together(mark) for mark in ("ROOF-01", "FF-04")}
+    both = together("ROOF-01", "FF-04")
+    heaviest = max(alone.values(), key=lambda choice: choice.tried[-1].mass)
+    assert [t.name for t in heaviest.tried if t.name != "IPE 300"][-1] == "IPE 240"
+    assert both.chosen == "IPE 360"  # what stands there differs, so it is no candidate
+    # The use told of the chosen one is the largest of all lines.
+    assert both.tried[-1].use == max(e.use_after for e in both.effects if e.own)
+
+
+def test_the_line_that_fails_is_not_the_longest_one():
+    # Of equal spans the first is asked first; one with a stricter limit must still decide.
+    job = load(JOB)
+    strict = replace(
+        job, limits=(*job.limits, replace(job.limits[1], on=Selector(name="J-4"), span_ratio=420.0))
+    )
+    found = pipeline.survey(MODEL, strict)
+    offer = pipeline.offered(pipeline.stock(MODEL, strict), strict, "model")
+    (choice,) = pipeline.lightest_of(found, strict, offer, marks=["FF-04"], alike=True)
+    assert choice.marks == ("FF-04", "FF-05", "FF-06", "FF-07")
+    assert choice.chosen == ""
+    assert choice.tried[-1].name == "IPE 300"
+    assert choice.tried[-1].use > 1.0
+
+
+def test_a_line_of_several_sections_is_named_and_chosen_for_when_asked():
+    given = 'members:\n  - {on: {name: B1-AB}, profile: "R 300x300"}\n'
+    mixed = parse(f"{JOB.read_text(encoding='utf-8')}\n{given}")
+    found = pipeline.survey(MODEL, mixed)
+    offer = pipeline.offered(pipeline.stock(MODEL), mixed, "model")
+
+    *_, rest = pipeline.lightest_of(found, mixed, offer)
+    assert rest.marks == ("FF-01",)
+    assert "several sections" in rest.reason
+    (asked,) = pipeline.lightest_of(found, mixed, offer, marks=["FF-01"], alike=True)
+    assert asked.before == "R 300x300, R 300x500"
+    assert asked.tried

@@ -25,7 +25,10 @@ _SAME = 1e-6
 
 @dataclass(frozen=True, slots=True)
 class Tried:
-    """One candidate: mass in kg/m, the largest use and its check; or why it was not suitable."""
+    """One candidate: mass in kg/m, the largest use and its check; or why it was not suitable.
+
+    Of one that is too weak for a line, the others were not tried: their use may be larger still.
+    """
 
     name: str
     mass: float
@@ -102,7 +105,8 @@ def kinds(model: LineModel, marks: Sequence[str], *, alike: bool) -> list[tuple[
     """Return groups of lines, in the order of the load path.
 
     Each of ``marks`` by itself; with ``alike``, with all lines of its section and material; of no
-    marks, every kind of the model.
+    marks, every kind of the model.  A frame, and a line of several sections, is of no kind: asked
+    for, it stands by itself, else see ``of_no_kind``.
     """
     order = [mark for level in levels([x.mark for x in model.lines], model.transfers)
              for group in level for mark in group]  # fmt: skip
@@ -110,12 +114,23 @@ def kinds(model: LineModel, marks: Sequence[str], *, alike: bool) -> list[tuple[
     if marks and not alike:
         return [(mark,) for mark in order if mark in marks]
     wanted = {_kind(lines[mark]) for mark in (marks or order)}
-    out: dict[tuple[str, str], list[str]] = {}
+    out: dict[tuple[str, ...], list[str]] = {}
     for mark in order:
         kind = _kind(lines[mark])
         if kind is not None and kind in wanted:
             out.setdefault(kind, []).append(mark)
+        elif kind is None and mark in marks:
+            out[(mark,)] = [mark]
     return [tuple(group) for group in out.values()]
+
+
+def of_no_kind(model: LineModel) -> Choice | None:
+    """Return that nothing was tried for lines which no kind holds; None where there are none."""
+    marks = tuple(line.mark for line in model.lines if _kind(line) is None)
+    if not marks:
+        return None
+    reason = "frames and lines of several sections are chosen for one by one, by their marks"
+    return Choice(marks, "", "", 0.0, 0.0, 0.0, (), reason=reason)
 
 
 def with_section(line: Line, section: Section, weight_sources: Iterable[str]) -> Line:
@@ -141,16 +156,19 @@ class _Search:
     ) -> None:  # fmt: skip
         self._model, self._settings, self._marks = model, settings, marks
         self._solve, self._tell = solve, tell
-        lines = [line for line in model.lines if line.mark in marks]
-        self._spans = [m for line in lines for m in line.members if m.role == "span"]
+        self._lines = [line for line in model.lines if line.mark in marks]
+        self._spans = [m for line in self._lines for m in line.members if m.role == "span"]
+        self._parts: dict[Sequence[str], LineModel] = {}
         self._present = {m.section.name: m.section for m in self._spans if m.section is not None}
         length = math.fsum(m.length for m in self._spans)
-        mass = math.fsum(_mass(m) * m.length for m in self._spans) / length
+        mass = math.fsum(_mass(m) * m.length for m in self._spans) / (length or 1.0)
         self._kept = Choice(marks, ", ".join(self._present), "", mass, mass, length, ())
 
     def choose(self, candidates: Sequence[Candidate], *, strict: bool) -> tuple[Choice, LineModel]:
         """Return the choice, and the model with it."""
         reason = next((r for m in self._spans if (r := _unfit(m))), "")
+        if not self._spans:
+            reason = "it has no span"
         if reason:
             return replace(self._kept, reason=reason), self._model
         material = self._spans[0].material
@@ -181,19 +199,34 @@ class _Search:
         return sorted(known.values(), key=lambda c: (c.section.area, c.name))
 
     def _tried(self, candidates: Sequence[Candidate], density: float) -> tuple[Tried, ...]:
+        """Try each until one suits.
+
+        A line that was too weak for the last one is asked first, by itself: of many lines hardly
+        another than the worst decides.
+        """
         tried: list[Tried] = []
-        small = _above(self._model, self._marks)
+        pilot = max(self._lines, key=_longest_span).mark
         for number, candidate in enumerate(candidates):
             self._tell(number / len(candidates))
-            outcome = self._solve(_changed(small, self._marks, candidate.section))
-            found = _judged(
-                candidate.name, candidate.section.area * density, outcome, self._settings,
-                self._marks,
-            )  # fmt: skip
-            tried.append(replace(found, categories=candidate.categories, origin=candidate.origin))
+            found, _ = self._judged(candidate, density, (pilot,))
+            if found.suits and len(self._marks) > 1:
+                found, pilot = self._judged(candidate, density, self._marks)
+            tried.append(found)
             if found.suits:
                 break
         return tuple(tried)
+
+    def _judged(
+        self, candidate: Candidate, density: float, marks: Sequence[str]
+    ) -> tuple[Tried, str]:
+        """How a candidate does in some of the lines, and the one in which it does worst."""
+        if marks not in self._parts:
+            self._parts[marks] = _above(self._model, marks)
+        outcome = self._solve(_changed(self._parts[marks], self._marks, candidate.section))
+        found, worst = _judged(
+            candidate.name, candidate.section.area * density, outcome, self._settings, marks
+        )
+        return replace(found, categories=candidate.categories, origin=candidate.origin), worst
 
 
 def _unfit(member: Member) -> str:
@@ -263,25 +296,32 @@ def _above(model: LineModel, marks: Sequence[str]) -> LineModel:
 
 def _judged(
     name: str, mass: float, outcome: Outcome, settings: Settings, marks: Sequence[str]
-) -> Tried:
+) -> tuple[Tried, str]:
+    """What a candidate comes to in these lines, and the mark of the line that decides."""
     results = {r.line.mark: r for r in outcome.lines if r.line.mark in marks}
-    if any(r.status != "balanced" for r in results.values()):
-        return Tried(name, mass, math.inf, "", False, "a line could not be analysed")
+    failed = next((mark for mark, r in results.items() if r.status != "balanced"), None)
+    if failed is not None:
+        return Tried(name, mass, math.inf, "", False, "a line could not be analysed"), failed
     found = check_lines(replace(outcome, lines=tuple(results.values())), settings)
-    spans = [
-        (result.line.members[each.member], each)
+    spans = {
+        mark: [c for c in found[mark] if result.line.members[c.member].role == "span"]
         for mark, result in results.items()
-        for each in found[mark]
-        if result.line.members[each.member].role == "span"
-    ]
+    }
     deflection = _deflection(results.values())
-    for _, each in spans:
-        left = next((c for c in each.checks if c.status == "not checked"), None)
+    for mark, each in spans.items():
+        checks = (check for member in each for check in member.checks)
+        left = next((c for c in checks if c.status == "not checked"), None)
         if left is not None:
             reason = f"not checked: {left.reason}"
-            return Tried(name, mass, math.inf, left.name, False, reason, deflection)
-    use, check = _worst(each for _, each in spans)
-    return Tried(name, mass, use, check, use <= 1.0, deflection=deflection)
+            return Tried(name, mass, math.inf, left.name, False, reason, deflection), mark
+    uses = {mark: _worst(each) for mark, each in spans.items()}
+    worst = max(uses, key=lambda mark: uses[mark][0])
+    use, check = uses[worst]
+    return Tried(name, mass, use, check, use <= 1.0, deflection=deflection), worst
+
+
+def _longest_span(line: Line) -> float:
+    return max((m.length for m in line.members if m.role == "span"), default=0.0)
 
 
 def _deflection(results: Iterable[LineResult]) -> float | None:

@@ -117,7 +117,7 @@ def made_of(
     """
     fitting: list[Candidate] = []
     others: list[Candidate] = []
-    kind = material.category or _kind(material.name)
+    kind = _KINDS.get(material.category, material.category) or _kind(material.name)
     for candidate in candidates:
         (fitting if _can_be_of(candidate, kind) else others).append(candidate)
     return fitting, others

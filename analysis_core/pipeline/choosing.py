@@ -22,6 +22,9 @@ if TYPE_CHECKING:
     from analysis_core.checking.offers import Offer
     from analysis_core.ifc.updating.stock import Stock
 
+# Lines whose results are kept while candidates are tried.
+_KEPT = 2000
+
 
 def lightest(
     path: str | Path,
@@ -91,15 +94,20 @@ def lightest_of(
 
     check_marks(found.model, marks)
     memory = Memory()
+    most = _KEPT + 4 * len(found.model.lines)
 
     def solved(model: LineModel) -> Outcome:
+        if len(memory.kept) > most:  # hardly a line of one candidate comes back with another
+            memory.kept.clear()
         return solve(replace(found, model=model, standing=()), settings, memory=memory)
 
     groups = choosing.kinds(found.model, marks, alike=alike)
-    return choosing.choose_lightest(
+    choices = choosing.choose_lightest(
         found.model, settings, offer.candidates, groups, solved,
         strict=strict, progress=progress or silent,
     )  # fmt: skip
+    rest = choosing.of_no_kind(found.model) if not marks else None
+    return choices if rest is None else [*choices, rest]
 
 
 def _check_offer(offer: Offer, where: str, only: Sequence[str]) -> None:
