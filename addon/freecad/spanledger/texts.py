@@ -47,6 +47,30 @@ CORE_WORDS = (
     words.noop("moment"),
 )
 
+# What members are checked for.
+CHECKS = (
+    words.noop("axial force"),
+    words.noop("axial force and flexure"),
+    words.noop("bending"),
+    words.noop("bending with axial force"),
+    words.noop("bending with shear"),
+    words.noop("buckling with bending"),
+    words.noop("concrete resistance"),
+    words.noop("concrete strength"),
+    words.noop("deflection limit"),
+    words.noop("flexure"),
+    words.noop("hogging reinforcement"),
+    words.noop("lateral torsional buckling"),
+    words.noop("nothing to check"),
+    words.noop("redistribution"),
+    words.noop("resistance"),
+    words.noop("sagging reinforcement"),
+    words.noop("span over depth"),
+    words.noop("steel resistance"),
+    words.noop("steel strength"),
+    words.noop("timber resistance"),
+)
+
 
 def tr(text: str) -> str:
     """Return the translation of a text that a presenter marked."""

@@ -54,9 +54,11 @@ class LightestDialog(QtWidgets.QDialog):
         self._show_running(False)
         self.groups.blockSignals(True)
         self.groups.clear()
-        for view in self._views:
+        for view, choice in zip(self._views, choices, strict=True):
             mark = "●" if view.changes else "○"
-            self.groups.addItem(f"{mark} {view.title}")
+            item = QtWidgets.QListWidgetItem(f"{mark} {view.title}")
+            item.setToolTip(", ".join(choice.marks))
+            self.groups.addItem(item)
         self.groups.blockSignals(False)
         first = next((i for i, view in enumerate(self._views) if view.changes), 0)
         self.groups.setCurrentRow(first)
@@ -126,6 +128,8 @@ class LightestDialog(QtWidgets.QDialog):
         self.groups.setObjectName("SpanledgerLightestGroups")
         self.groups.setAccessibleName(translate("Spanledger", "Lines that get one section"))
         self.groups.setMaximumWidth(180)
+        self.groups.setTextElideMode(Qt.TextElideMode.ElideRight)
+        self.groups.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.groups.hide()
         self.summary = _words("SpanledgerLightestSummary")
         font = self.summary.font()
@@ -180,7 +184,7 @@ class LightestDialog(QtWidgets.QDialog):
         layout.addLayout(running)
         layout.addLayout(both, 1)
         layout.addLayout(buttons)
-        self.resize(860, 760)
+        self.resize(940, 760)
 
     def _connect(self) -> None:
         self.source.currentIndexChanged.connect(lambda _index: self._show_kinds())

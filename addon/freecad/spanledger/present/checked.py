@@ -39,7 +39,7 @@ def check_facts(members: Sequence[MemberChecks], member: int) -> list[tuple[str,
                 words = f"{100.0 * check.use:.0f} % ({safe(check.clause)})"
                 if check.use > 1.0:
                     words = "✖ " + words
-            facts.append((safe(check.name), words))
+            facts.append((say(safe(check.name)), words))
     return facts
 
 

@@ -976,6 +976,14 @@
       <translation>wie es ist: {names}</translation>
     </message>
     <message>
+      <source>axial force</source>
+      <translation>Normalkraft</translation>
+    </message>
+    <message>
+      <source>axial force and flexure</source>
+      <translation>Normalkraft und Biegung</translation>
+    </message>
+    <message>
       <source>balanced</source>
       <translation>ausgeglichen</translation>
     </message>
@@ -988,8 +996,24 @@
       <translation>wird</translation>
     </message>
     <message>
+      <source>bending</source>
+      <translation>Biegung</translation>
+    </message>
+    <message>
+      <source>bending with axial force</source>
+      <translation>Biegung mit Normalkraft</translation>
+    </message>
+    <message>
+      <source>bending with shear</source>
+      <translation>Biegung mit Querkraft</translation>
+    </message>
+    <message>
       <source>brought up to date</source>
       <translation>auf den Stand gebracht</translation>
+    </message>
+    <message>
+      <source>buckling with bending</source>
+      <translation>Knicken mit Biegung</translation>
     </message>
     <message>
       <source>by change</source>
@@ -1016,6 +1040,14 @@
       <translation>geändert</translation>
     </message>
     <message>
+      <source>concrete resistance</source>
+      <translation>Widerstand des Betons</translation>
+    </message>
+    <message>
+      <source>concrete strength</source>
+      <translation>Festigkeit des Betons</translation>
+    </message>
+    <message>
       <source>continuous</source>
       <translation>durchlaufend</translation>
     </message>
@@ -1034,6 +1066,10 @@
     <message>
       <source>deflection</source>
       <translation>Durchbiegung</translation>
+    </message>
+    <message>
+      <source>deflection limit</source>
+      <translation>Durchbiegungsgrenze</translation>
     </message>
     <message>
       <source>depth</source>
@@ -1072,6 +1108,10 @@
       <translation>Volleinspannmoment</translation>
     </message>
     <message>
+      <source>flexure</source>
+      <translation>Biegung</translation>
+    </message>
+    <message>
       <source>free</source>
       <translation>frei</translation>
     </message>
@@ -1090,6 +1130,10 @@
     <message>
       <source>hogging</source>
       <translation>Stützmoment</translation>
+    </message>
+    <message>
+      <source>hogging reinforcement</source>
+      <translation>Bewehrung oben</translation>
     </message>
     <message>
       <source>imposed</source>
@@ -1126,6 +1170,10 @@
     <message>
       <source>largest unbalance first</source>
       <translation>größtes Ungleichgewicht zuerst</translation>
+    </message>
+    <message>
+      <source>lateral torsional buckling</source>
+      <translation>Biegedrillknicken</translation>
     </message>
     <message>
       <source>lightest that suffices</source>
@@ -1220,6 +1268,10 @@
       <translation>nichts wirkt</translation>
     </message>
     <message>
+      <source>nothing to check</source>
+      <translation>nichts nachzuweisen</translation>
+    </message>
+    <message>
       <source>other</source>
       <translation>sonstige</translation>
     </message>
@@ -1252,12 +1304,24 @@
       <translation>bereit</translation>
     </message>
     <message>
+      <source>redistribution</source>
+      <translation>Umlagerung</translation>
+    </message>
+    <message>
       <source>regrouped</source>
       <translation>umgruppiert</translation>
     </message>
     <message>
+      <source>resistance</source>
+      <translation>Widerstand</translation>
+    </message>
+    <message>
       <source>sagging</source>
       <translation>Feldmoment</translation>
+    </message>
+    <message>
+      <source>sagging reinforcement</source>
+      <translation>Bewehrung unten</translation>
     </message>
     <message>
       <source>section table of the job file ({count})</source>
@@ -1288,6 +1352,10 @@
       <translation>Schnee</translation>
     </message>
     <message>
+      <source>span over depth</source>
+      <translation>Biegeschlankheit</translation>
+    </message>
+    <message>
       <source>span {number} of {mark}</source>
       <translation>Feld {number} von {mark}</translation>
     </message>
@@ -1308,6 +1376,14 @@
       <translation>bleibt, auch wenn es nicht mehr passen mag</translation>
     </message>
     <message>
+      <source>steel resistance</source>
+      <translation>Widerstand des Stahls</translation>
+    </message>
+    <message>
+      <source>steel strength</source>
+      <translation>Festigkeit des Stahls</translation>
+    </message>
+    <message>
       <source>strength</source>
       <translation>Tragfähigkeit</translation>
     </message>
@@ -1318,6 +1394,10 @@
     <message>
       <source>temperature</source>
       <translation>Temperatur</translation>
+    </message>
+    <message>
+      <source>timber resistance</source>
+      <translation>Widerstand des Holzes</translation>
     </message>
     <message>
       <source>too weak</source>
