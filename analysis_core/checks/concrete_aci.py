@@ -211,7 +211,14 @@ def _bending(
     w.step("d", "", d, "section length", "", note="to the centre of the bars")
     w.step("β1", "", stress_block_factor(fc), "", "Table 22.2.2.4.3")
     if flange:
-        w.step("b_f", "", flange[0], "section length", "Table 6.3.2.1", note="effective flange")
+        w.step(
+            "b_f",
+            "",
+            flange[0],
+            "section length",
+            "Table 6.3.2.1",
+            note="effective flange, l_n taken as the span",
+        )
     strain, words = least_strain(design, f, bottom=bottom)
     found = required_reinforcement(
         moment, b=bw, d=d, d2=bar_depth(f), fc=fc, fy=f["f_y"], phi=f["phi_t"], e_s=f["E_s"],

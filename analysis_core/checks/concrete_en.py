@@ -38,7 +38,8 @@ FIGURES: Mapping[str, Figure] = {
 }  # fmt: skip
 _NOT_COVERED = (
     "Not covered: torsion, cracking, curtailment and anchorage, the tension that shear adds "
-    "(6.2.3(7)), bars in a second layer, fire, creep."
+    "(6.2.3(7)), partial fixity at supports taken as simple (9.2.1.2(1)), bars in a second layer, "
+    "fire, creep."
 )
 _OF_FLANGES = " Nor shear between web and flanges (6.2.4)."
 

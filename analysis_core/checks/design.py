@@ -324,6 +324,17 @@ def unlike_profile(section: Section) -> str:
     return ""
 
 
+def unknown_properties(section: Section) -> str:
+    """Return why a steel section cannot be checked for want of a property; "" where it can."""
+    d = plates(section)
+    if min(section.area, section.inertia, section.inertia_lateral) <= 0.0:
+        return f"Area or second moments of area of {section.name} are not known."
+    needed = ("section_modulus_top", "section_modulus_bottom", "plastic_modulus")
+    if section.torsion <= 0.0 or min(d.get(name, 0.0) for name in needed) <= 0.0:
+        return f"Torsion constant or section moduli of {section.name} are not known."
+    return ""
+
+
 def is_stainless(material: Material) -> bool:
     """Whether a steel is stainless by its category or name: other standards hold for it."""
     return material.category == "stainless" or bool(_STAINLESS.search(material.name))

@@ -21,6 +21,7 @@ from analysis_core.checks.design import (
     plates,
     segments,
     strength_of,
+    unknown_properties,
     unlike_profile,
 )
 from analysis_core.checks.steel_aisc_axial import check_axial
@@ -100,7 +101,7 @@ def check_steel(design: MemberDesign, figures: Figures, *, allowable: bool = Fal
         if d.get("top_flange_width") != d.get("bottom_flange_width"):
             reason = "The two flanges differ; unequal flanges are outside this check."
             return [not_checked("steel strength", reason, "AISC 360, F4")]
-    if reason := unlike_profile(section):
+    if reason := unlike_profile(section) or unknown_properties(section):
         return [not_checked("steel strength", reason, "AISC 360")]
     design = with_design_walls(design, figures)
     hollow = section.shape not in ("I", "channel")

@@ -1,4 +1,7 @@
-"""Lateral torsional buckling by EN 1993-1-1, 6.3.2: I-sections and channels between restraints."""
+"""Lateral torsional buckling by EN 1993-1-1, 6.3.2, between restraints.
+
+I-sections by 6.3.2.3, channels and hollow sections deeper than wide by the general case.
+"""
 
 from __future__ import annotations
 
@@ -25,12 +28,12 @@ _NOT_COVERED = (
 
 def check_lateral(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
     """Return the check of the unbraced length that uses most of its resistance."""
-    if design.section.shape in ("tube", "hollow rectangle"):
-        words = "hollow sections are not susceptible"
+    if _stout(design):
+        words = "round and square hollow sections, and wide ones, are not susceptible"
         return _not_susceptible(design, f, fy, class_, words)
     found = [s for field in design.fields for s in segments(design, field)]
     if not found:
-        words = "the compressed flange is held all along"
+        words = "no flange is compressed where it is not held"
         return _not_susceptible(design, f, fy, class_, words)
     worst = max(found, key=lambda s: abs(s.largest) / _reduction(design, f, fy, class_, s, None))
     return buckling(design, f, fy, class_, worst)
@@ -58,11 +61,19 @@ def buckling(
     )  # fmt: skip
 
 
+def _stout(design: MemberDesign) -> bool:
+    """6.3.2.1(2): round and square hollow sections, and boxes bent about their weak axis."""
+    section = design.section
+    if section.shape == "hollow rectangle":
+        return section.depth <= section.width * (1.0 + 1e-9)
+    return section.shape == "tube"
+
+
 def reduction_between(
     design: MemberDesign, f: Figures, fy: float, class_: int, source: str
 ) -> float:
     """Return the smallest χ_LT of the unbraced segments under the field of this source."""
-    if design.section.shape in ("tube", "hollow rectangle"):
+    if _stout(design):
         return 1.0
     found = [
         _reduction(design, f, fy, class_, segment, None)
@@ -94,7 +105,10 @@ def _reduction(
     curve, why = buckling_curve(design)
     rolled = section.shape == "I"
     plateau, beta = (f["lambda_LT0"], f["beta"]) if rolled else (0.2, 1.0)
-    chi = reduction_factor(slender, IMPERFECTION[curve], plateau=plateau, beta=beta)
+    ignored = section.shape == "hollow rectangle" and slender <= f["lambda_LT0"]
+    chi = 1.0
+    if not ignored:
+        chi = reduction_factor(slender, IMPERFECTION[curve], plateau=plateau, beta=beta)
     if w is None:
         return chi
     if segment.free:
@@ -115,8 +129,9 @@ def _reduction(
         W_y=(modulus, "section modulus"), f_y=(fy, "stress"), M_cr=(critical, "moment"),
     )  # fmt: skip
     w.step("α_LT", "", IMPERFECTION[curve], "", "Tables 6.3, 6.5", note=why)
-    if slender <= plateau:
-        return w.step("χ_LT", "", chi, "", "6.3.2.2(4)", note=f"no reduction up to {plateau:g}")
+    if ignored or slender <= plateau:
+        most = f["lambda_LT0"] if ignored else plateau
+        return w.step("χ_LT", "", chi, "", "6.3.2.2(4)", note=f"no reduction up to {most:g}")
     alpha = IMPERFECTION[curve]
     phi = w.step(
         "Φ_LT", "0.5 (1 + {α_LT} ({λ_LT} - {λ_LT,0}) + {β} {λ_LT}²)",
@@ -135,7 +150,7 @@ def _reduction(
 def buckling_curve(design: MemberDesign) -> tuple[str, str]:
     """Return the curve of lateral torsional buckling and why.
 
-    Table 6.5 for I-sections (rolled b, c; welded c, d); Table 6.4 for channels (d).
+    Table 6.5 for I-sections (rolled b, c; welded c, d); Table 6.4 for channels and deep boxes (d).
     """
     if design.section.shape != "I":
         return "d", "no I-section: curve d of Table 6.4"

@@ -19,6 +19,7 @@ from analysis_core.checks.design import (
     is_stainless,
     plates,
     strength_of,
+    unknown_properties,
     unlike_profile,
 )
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
@@ -133,7 +134,7 @@ def outside(design: MemberDesign) -> str:
         return "The two flanges differ; unequal flanges are outside this check."
     if section.shape == "I" and d.get("top_flange_width") != d.get("bottom_flange_width"):
         return "The two flanges differ; unequal flanges are outside this check."
-    return unlike_profile(section)
+    return unlike_profile(section) or unknown_properties(section)
 
 
 def thickest(design: MemberDesign) -> float:

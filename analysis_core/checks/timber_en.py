@@ -157,7 +157,14 @@ def _bending(
         worst = 0.0, plain, 1.0, float(field.x[index]), None, 0.0
     segment_, slender = worst[4], worst[5]
     if segment_ is None:
-        w.step("k_crit", "", 1.0, "", "6.3.3(5)", note="the compressed edge is held all along")
+        w.step(
+            "k_crit",
+            "",
+            1.0,
+            "",
+            "6.3.3(5)",
+            note="where this moment acts, the compressed edge is held",
+        )
     else:
         w.step("l_ef", "", segment_.length + 2.0 * h, "length", "Table 6.1",
                note=f"the {segment_.flange} edge not held, plus 2 h")  # fmt: skip

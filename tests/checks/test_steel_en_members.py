@@ -9,7 +9,13 @@ from designs import IPE300, S355, box, i_section, pressed, rectangle, simple_spa
 from scipy.linalg import eigh
 from scipy.optimize import brentq
 
-from analysis_core.checks import steel_en, steel_en_axial, steel_en_lateral, steel_en_section
+from analysis_core.checks import (
+    steel_aisc,
+    steel_en,
+    steel_en_axial,
+    steel_en_lateral,
+    steel_en_section,
+)
 from analysis_core.checks.design import EffectField, Restraints, segments
 from analysis_core.checks.working import Figures
 from analysis_core.model import Section
@@ -392,3 +398,40 @@ def test_the_project_may_lengthen_unbraced_lengths_for_loads_above_the_shear_cen
     longer = next(s.value for s in high.steps if s.symbol == "L")
     assert longer == pytest.approx(7.2)
     assert high.resistance < plain.resistance
+
+
+@pytest.mark.parametrize(("length", "reduced"), [(4.0, False), (15.0, True)])
+def test_a_deep_box_buckles_sideways_when_it_is_long(length, reduced):
+    """M_cr = pi/L sqrt(E Iz G It) of a section without warping (Timoshenko and Gere)."""
+    deep = box("RHS 300x100", 0.30, 0.10, 0.008)
+    check = checks(simple_span(deep, S355, length, 2e3))["lateral torsional buckling"]
+    elastic = (
+        1.136 * math.pi / length * math.sqrt(210e9 * deep.inertia_lateral * 81e9 * deep.torsion)
+    )  # 1.136: the shape of the moments of a uniform load
+    plastic = dict(deep.dimensions)["plastic_modulus"] * 355e6
+    slender = math.sqrt(plastic / elastic)
+    # 6.3.2.2 with curve d, and nothing up to 0.4 (6.3.2.2(4)).
+    phi = 0.5 * (1 + 0.76 * (slender - 0.2) + slender**2)
+    chi = 1 / (phi + math.sqrt(phi**2 - slender**2)) if reduced else 1.0
+    assert (slender > 0.4) is reduced
+    assert check.resistance == pytest.approx(chi * plastic, rel=2e-3)
+
+
+@pytest.mark.parametrize("section", [box("SHS", 0.2, 0.2, 0.008), box("lying", 0.1, 0.2, 0.008)])
+def test_square_and_lying_boxes_do_not_buckle_sideways(section):
+    check = checks(simple_span(section, S355, 15.0, 1e3))["lateral torsional buckling"]
+    plastic = dict(section.dimensions)["plastic_modulus"] * 355e6
+    assert check.resistance == pytest.approx(plastic)
+
+
+@pytest.mark.parametrize("change", [{"torsion": 0.0}, {"inertia_lateral": 0.0}, {"area": 0.0}])
+@pytest.mark.parametrize("section", [IPE300, box("RHS", 0.3, 0.1, 0.008), tube("CHS", 0.3, 0.01)])
+def test_properties_that_are_not_known_are_said_so(section, change):
+    for found in (
+        steel_en.check_steel(simple_span(replace(section, **change), S355, 6.0, 1e3), FIGURES),
+        steel_aisc.check_steel(
+            simple_span(replace(section, **change), S355, 6.0, 1e3), Figures(steel_aisc.FIGURES, {})
+        ),
+    ):
+        assert [c.status for c in found] == ["not checked"]
+        assert "not known" in found[0].reason
