@@ -37,10 +37,10 @@ def wishes(
     else is wanted.  Raises JobError for one that the model does not have, and
     where an element is given two sections or materials.
     """
-    if settings.section_table_file and not settings.section_table:  # named but not read
+    if settings.section_table_files and not settings.section_table:  # named but not read
         raise JobError(
-            f"The section table '{settings.section_table_file}' of the job file was not read, as "
-            f"the job file has no place on the disk yet. Save it first."
+            f"The section table '{settings.section_table_files[0]}' of the job file was not read, "
+            f"as the job file has no place on the disk yet. Save it first."
         )
     areas = {m.global_id: m.section.area for m in building.members if m.section is not None}
     densities = {m.global_id: m.material.density for m in building.members if m.material}

@@ -360,8 +360,8 @@ class Settings:
     materials: tuple[MaterialSetting, ...] = ()
     sections: tuple[SectionSetting, ...] = ()
     section_table: tuple[TableSection, ...] = ()
-    section_table_file: str = ""
-    """A file that the job file names for the section table; empty where there is none."""
+    section_table_files: tuple[str, ...] = ()
+    """The files that the job file names for the section table."""
     section_table_findings: tuple[Finding, ...] = ()
     """What was noticed while the section table was read."""
     members: tuple[MemberSetting, ...] = ()

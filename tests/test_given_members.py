@@ -4,6 +4,8 @@ import json
 import math
 from pathlib import Path
 
+import ifcopenshell
+import numpy as np
 import pytest
 
 from analysis_core import pipeline
@@ -153,6 +155,48 @@ def test_a_section_named_on_the_command_line_comes_first(tmp_path):
     )
     assert line_of(done.outcome, "J-1").line.members[0].section.name == "IPE 270"
     assert line_of(done.outcome, "J-2").line.members[0].section.name == "I 410"
+
+
+def test_what_the_job_file_gives_is_not_left_out_beside_a_named_section(tmp_path, capsys):
+    job = tmp_path / "job.yaml"
+    job.write_text(JOB + TABLE + '\nmembers:\n  - {on: {name: J-1}, profile: "I 410"}\n', "utf-8")
+    out = tmp_path / "out.ifc"
+    common = ["post", str(model()), "--job", str(job), "-o", str(out)]
+    assert main([*common, "--section", "FF-05=IPE 270"]) == 2
+    assert "post --members" in capsys.readouterr().err
+    assert not out.exists()
+    assert main([*common, "--section", "FF-05=IPE 270", "--members"]) == 0
+    plain = pipeline.run(out, parse(JOB))
+    assert [line_of(plain, n).line.members[0].section.name for n in ("J-1", "J-2")] == [
+        "I 410", "IPE 270",
+    ]  # fmt: skip
+
+
+@pytest.mark.parametrize("angle", [90.0, -90.0, 30.0])
+def test_a_turned_member_stays_turned(tmp_path, angle):
+    turned = ifcopenshell.open(model())
+    beam = next(e for e in turned.by_type("IfcBeam") if e.Name == "J-1")
+    (solid,) = next(
+        r.Items for r in beam.Representation.Representations
+        if r.RepresentationIdentifier == "Body"
+    )  # fmt: skip
+    place, a = solid.Position, math.radians(angle)
+    z = np.array(place.Axis.DirectionRatios if place.Axis else (0.0, 0.0, 1.0))
+    x = np.array(place.RefDirection.DirectionRatios if place.RefDirection else (1.0, 0.0, 0.0))
+    ratios = math.cos(a) * x + math.sin(a) * np.cross(z, x)
+    place.RefDirection = turned.create_entity("IfcDirection", tuple(map(float, ratios)))
+    turned.write(str(tmp_path / "turned.ifc"))
+    asked = settings('{on: {name: J-1}, profile: "I 410"}')
+
+    solved = pipeline.run(tmp_path / "turned.ifc", asked)
+    done = pipeline.update_members(
+        tmp_path / "turned.ifc", tmp_path / "out.ifc", asked, given=True
+    ).outcome
+    one, other = (line_of(x, "J-1").line.members[0].section for x in (solved, done))
+    assert one.inertia == pytest.approx(other.inertia, rel=1e-9)
+    assert one.inertia_product == pytest.approx(other.inertia_product, abs=1e-12)
+    assert dict(one.dimensions)["roll"] == pytest.approx(dict(other.dimensions)["roll"], abs=1e-9)
+    assert one.depth == pytest.approx(other.depth, rel=1e-9)
 
 
 def test_a_decision_does_not_read_the_file_again():

@@ -122,7 +122,7 @@ def test_a_list_beside_the_job_file_is_its_section_table(tmp_path):
     }  # fmt: skip
     told = {f.slug for f in pipeline.survey(MODEL, settings).findings}
     assert slugs <= told
-    assert parse(job.read_text(encoding="utf-8")).section_table_file == "l.csv"
+    assert parse(job.read_text(encoding="utf-8")).section_table_files == ("l.csv",)
 
 
 def test_a_steel_line_is_offered_no_planks_and_only_what_is_asked_for(tmp_path, capsys):

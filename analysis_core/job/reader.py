@@ -92,7 +92,7 @@ def _with_table(settings: Settings, table: SectionTable) -> Settings:
     return replace(
         settings,
         section_table=table.sections,
-        section_table_file=table.file,
+        section_table_files=table.files,
         section_table_findings=table.findings,
     )
 

@@ -18,10 +18,10 @@ from analysis_core.settings import TableSection
 
 
 class SectionTable(NamedTuple):
-    """Sections by name; ``file``: a file that they are stated in, "" where there is none."""
+    """Sections by name; ``files``: the names of those that they are stated in."""
 
     sections: tuple[TableSection, ...]
-    file: str = ""
+    files: tuple[str, ...] = ()
     findings: tuple[Finding, ...] = ()
 
 
@@ -34,15 +34,17 @@ def section_table(stated: str | Sequence[Any], folder: Path | None) -> SectionTa
     names = [item for item in items if isinstance(item, str)]
     rows = [item for item in items if not isinstance(item, str)]
     files = [] if folder is None else [(name, folder / name) for name in names]
-    return _table(rows, files, names[0] if names else "")
+    return _table(rows, files, tuple(names))
 
 
 def read_files(paths: Sequence[Path]) -> SectionTable:
     """Return the section tables of files.  Raises JobError."""
-    return _table([], [(path.name, path) for path in paths], paths[0].name if paths else "")
+    return _table([], [(path.name, path) for path in paths], tuple(p.name for p in paths))
 
 
-def _table(rows: list[Any], files: Iterable[tuple[str, Path]], file: str) -> SectionTable:
+def _table(
+    rows: list[Any], files: Iterable[tuple[str, Path]], named: tuple[str, ...]
+) -> SectionTable:
     lists: list[TableSection] = []
     findings: list[Finding] = []
     for name, path in files:
@@ -62,7 +64,7 @@ def _table(rows: list[Any], files: Iterable[tuple[str, Path]], file: str) -> Sec
     sections, hidden = _together(own, lists)
     if hidden:
         findings.append(_hidden(hidden))
-    return SectionTable(sections, file, tuple(findings))
+    return SectionTable(sections, named, tuple(findings))
 
 
 def _rows(name: str, text: str) -> Any:

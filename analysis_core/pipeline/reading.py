@@ -183,7 +183,7 @@ def _asked_of_reading(settings: Settings) -> Settings:
     later = (
         "title", "text", "display", "rules", "cases", "combinations", "actions", "movements",
         "supports", "releases", "sections", "limits", "checks", "members", "section_table",
-        "section_table_file", "section_table_findings",
+        "section_table_files", "section_table_findings",
     )  # fmt: skip
     return replace(settings, **{name: getattr(blank, name) for name in later})
 

@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
+from analysis_core.errors import JobError
 from analysis_core.ifc import source as ifc_source
 from analysis_core.ifc.posting.posted import known_marks, read_posted
 from analysis_core.pipeline.progress import Progress
@@ -96,6 +97,11 @@ def update_members(
     from analysis_core.member_update import check_update
 
     settings = settings or Settings()
+    if settings.members and not given:
+        raise JobError(
+            "The job file gives members other sections or materials (members), which would be left "
+            "out here. Write them too (post --members), or take them out of the job file."
+        )
     as_read = replace(settings, members=())
     with tempfile.TemporaryDirectory() as folder:
         copy = Path(folder) / Path(source).name

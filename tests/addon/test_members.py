@@ -215,8 +215,12 @@ def test_a_table_beside_the_job_file_is_read_and_a_missing_one_refused(opened):
     with pytest.raises(JobError, match=r"none\.csv"):
         opened.decide("x", "section_table: none.csv\n")
     (opened.path.parent / "own.csv").write_text("name,shape,diameter\nD,circle,1 m\n", "utf-8")
+    assert opened.changed_on_disk()
+    assert opened.path.parent / "own.csv" in opened.files
     opened.read_again()
     assert [s.name for s in opened.settings.section_table] == ["D"]
+    opened.receive(opened.run(opened.settings, silent))
+    assert not opened.changed_on_disk()
 
 
 def test_the_shelf_holds_model_job_and_host_once_by_name(opened, tmp_path):

@@ -62,6 +62,8 @@ class OpenedModel:
     shape: BuildingShape | None = None
     """The bodies of the building, once they were made."""
     _settings: dict[str, Settings] = field(default_factory=dict)
+    _tables: dict[Path, tuple[int, int] | None] = field(default_factory=dict)
+    """The section tables beside the job file, as they were when they were read."""
     done: list[Decision] = field(default_factory=list)
     undone: list[Decision] = field(default_factory=list)
 
@@ -235,6 +237,7 @@ class OpenedModel:
         """
         text = _read(self.job_path) if self.job_path.exists() else ""
         self._settings.clear()  # a section table beside it may have changed, too
+        self._tables.clear()
         self._parsed(text)
         self.reading = None
         if text != self.text:
@@ -248,7 +251,16 @@ class OpenedModel:
             text = _read(self.job_path) if self.job_path.exists() else ""
         except JobError:
             return True
-        return text != self.text or _stamp(self.path) != self.stamp
+        return (
+            text != self.text
+            or _stamp(self.path) != self.stamp
+            or any(_stamp(path) != stamp for path, stamp in self._tables.items())
+        )
+
+    @property
+    def files(self) -> list[Path]:
+        """The files that the lines depend on: model, job file, section tables beside it."""
+        return [self.path, self.job_path, *self._tables]
 
     def take_posted(self, outcome: Outcome, target: Path) -> None:
         """Remember what was written; where it went into the model itself, its bytes changed."""
@@ -267,6 +279,9 @@ class OpenedModel:
             if len(self._settings) > 8:
                 self._settings.clear()
             self._settings[text] = job.parse(text, folder=self.job_path.parent)
+            for name in self._settings[text].section_table_files:
+                path = self.job_path.parent / name
+                self._tables[path] = _stamp(path)
         return self._settings[text]
 
     def _write(self, text: str) -> None:

@@ -431,7 +431,7 @@ class Desk(QtCore.QObject):
         self.tell(text.format(path=path))
 
     def _watch(self) -> None:
-        self.files.watch(p for s in self.opened_models.values() for p in (s.path, s.job_path))
+        self.files.watch(p for s in self.opened_models.values() for p in s.files)
 
     def _files_changed(self) -> None:
         """A model or a job file was written by somebody else: its lines are stale."""
