@@ -329,6 +329,15 @@ def test_steel_takes_redistributed_moments_where_its_class_and_its_restraint_all
     moved = two_spans_redistributed(tube_like, S355, 0.1, load=20e3)[1][0]
     hog, sag = moments_by_hand(20e3, 10e3, 0.1)
     assert abs(moved["bending"].demand) == pytest.approx(max(hog, sag), rel=1e-6)
+    # The states beside the extremes are redistributed ones as well, here in a long table of x.
+    assert abs(moved["bending with shear"].demand) == pytest.approx(max(hog, sag), rel=1e-6)
+    before = two_spans_redistributed(tube_like, S355, None, load=20e3)[1][0]
+    assert abs(moved["shear"].demand) < abs(before["shear"].demand)
+    beside = {s.symbol: s.value for s in moved["bending with shear"].steps}
+    # Shear at the middle bearing: half the load and the redistributed moment over the span.
+    acting = (1.35 * 20e3 + 1.5 * 10e3) * 3.0 + hog / 6.0
+    resistance = next(s.value for s in moved["shear"].steps if s.symbol == "V_pl,Rd")
+    assert beside["v"] == pytest.approx(acting / resistance, rel=1e-6)
     assert moved["redistribution"].demand == 0.1
     assert moved["redistribution"].resistance == 0.15
 

@@ -10,6 +10,7 @@ from analysis_core.checks import (
     steel_aisc,
     steel_aisc_axial,
     steel_aisc_hollow,
+    steel_redistribution,
 )
 from analysis_core.checks.working import Figures
 
@@ -238,3 +239,27 @@ def test_long_boxes_buckle_as_the_theory_of_closed_sections_says():
     assert steps["L_p"] == pytest.approx(
         0.13 / 2.0 * elastic / (FY * 0.93 * dict(hss.dimensions)["plastic_modulus"])
     )
+
+
+@pytest.mark.parametrize(("change", "length", "words"), [
+    ({}, 1.5, ""),
+    ({}, 1.10, "unbraced length"),  # L_m = 0.044 · 29000/50 · 1.652 in = 42.2 in = 1.071 m
+    ({"fy": 70 * KSI}, 1.0, "65 ksi"),
+    ({"flange": 0.35 * INCH}, 1.0, "compact"),
+    ({"axial": -0.2}, 1.0, "axial force"),
+])  # fmt: skip
+def test_redistribution_by_aisc_asks_for_compactness_restraint_and_little_force(
+    change, length, words
+):
+    """B3.3 and F13.5 with M1/M2 = -1: L_m = 0.044 (E/F_y) r_y."""
+    section = W18X50
+    if "flange" in change:
+        section = replace(section, dimensions=tuple(
+            {**dict(section.dimensions), "flange_thickness": change["flange"]}.items()
+        ))  # fmt: skip
+    fy = change.get("fy", FY)
+    material = replace(A992, strength=(("fy", fy),))
+    design = simple_span(section, material, length, 1e3, continuous=words != "unbraced length")
+    design = pressed(design, change.get("axial", 0.0) * fy * section.area)
+    reason = steel_redistribution.why_elastic(design, FIGURES, "aisc-360")
+    assert (words in reason) if words else not reason

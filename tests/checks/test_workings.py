@@ -95,6 +95,10 @@ CASES = {
     "concrete": lambda: concrete_en.check_concrete(
         hogging(rectangle(0.3, 0.5), C30, 8.0, 40e3), CEN),
     "T": lambda: concrete_en.check_concrete(hogging(tee(1.0, 0.12, 0.3, 0.6), C30, 8.0, 60e3), CEN),
+    "T with bars in compression": lambda: concrete_en.check_concrete(
+        simple_span(tee(0.8, 0.12, 0.3, 0.5), C30, 8.0, 110e3), CEN),
+    "ACI T with bars in compression": lambda: concrete_aci.check_concrete(
+        simple_span(tee(0.8, 0.12, 0.3, 0.5), C30, 8.0, 130e3), ACI),
     "ACI": lambda: concrete_aci.check_concrete(hogging(rectangle(0.3, 0.5), C30, 8.0, 40e3), ACI),
     "ACI T": lambda: concrete_aci.check_concrete(
         hogging(tee(1.0, 0.12, 0.3, 0.6), C30, 8.0, 60e3), ACI),
@@ -117,3 +121,10 @@ def test_each_formula_with_its_numbers_gives_its_value(case):
             assert step.value >= value * (1 - 1e-9), step
         else:
             assert step.value == pytest.approx(value, rel=1e-9), step
+
+
+@pytest.mark.parametrize(("case", "symbol"), [
+    ("T with bars in compression", "A_s2"), ("ACI T with bars in compression", "A'_s"),
+])  # fmt: skip
+def test_these_cases_have_bars_in_compression(case, symbol):
+    assert symbol in {s.symbol for check in CASES[case]() for s in check.steps}
