@@ -23,6 +23,8 @@ from analysis_core.checks.design import (
     Sag,
 )
 from analysis_core.checks.timber_en import DURATIONS
+from analysis_core.distribution import solve
+from analysis_core.effects.arrangements import SpanCases
 from analysis_core.effects.deflection_limits import (
     DeflectionLimit,
     SpanDeflection,
@@ -213,7 +215,9 @@ def timber_sags(result: LineResult, creep: float) -> dict[int, tuple[Sag, ...]] 
     """Return deflections at once and in the end by the member where each is largest.
 
     In the end: the characteristic combination plus k_def times the quasi-permanent one, which is
-    2.2.3(5) term by term.  None where the combinations do not have both kinds.
+    2.2.3(5) term by term.  Members count as flexible in shear whatever the job file says: E/G of
+    16 makes a tenth of the deflection of a deep one.  None where the combinations do not have both
+    kinds.
     """
     given = _given(result)
     of_kind = {
@@ -227,16 +231,37 @@ def timber_sags(result: LineResult, creep: float) -> dict[int, tuple[Sag, ...]] 
         for c in of_kind["characteristic"]
         for slow in of_kind["quasi-permanent"]
     ]
+    spans, parts = _flexible_in_shear(given)
     out: dict[int, tuple[Sag, ...]] = {}
     for name, combinations in (("w_inst", of_kind["characteristic"]), ("w_net_fin", final)):
-        (spans,) = span_deflections(
-            [given.spans], [given.parts], combinations, DeflectionLimit(),
-            arrangements=given.arrangements,
-        )  # fmt: skip
-        for span in spans:
+        (found,) = span_deflections(
+            [spans], [parts], combinations, DeflectionLimit(), arrangements=given.arrangements
+        )
+        for span in found:
             member, sag = _sag(name, span)
             out[member] = (*out.get(member, ()), sag)
     return out
+
+
+def _flexible_in_shear(given: DetailInput) -> tuple[SpanCases, LineSolution]:
+    """The line with its solid timber members flexible in shear, solved anew by its parts."""
+    line = given.spans.line
+    members = tuple(_with_shear(member) for member in line.members)
+    if members == line.members:
+        return given.spans, given.parts
+    spans = replace(given.spans, line=replace(line, members=members))
+    return spans, solve(spans.line, spans.cases)
+
+
+def _with_shear(member: Member) -> Member:
+    section, material = member.section, member.material
+    if section is None or material is None or section.shape != "rectangle":
+        return member
+    rigidity = material.usable_shear_modulus * section.area / 1.2
+    if rigidity <= 0.0 or any(piece.shear is not None for piece in member.pieces):
+        return member
+    pieces = tuple(replace(piece, shear=(rigidity,)) for piece in member.pieces)
+    return replace(member, pieces=pieces)
 
 
 def _sag(name: str, found: SpanDeflection) -> tuple[int, Sag]:

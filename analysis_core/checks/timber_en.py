@@ -295,6 +295,6 @@ _FORMULAS: Mapping[str, str] = {
     "w_net_fin": "w_G (1 + k_def) + w_Q,1 (1 + ψ_2,1 k_def) + Σ w_Q,i (ψ_0,i + ψ_2,i k_def)",
 }
 _SAG_NOT_COVERED = (
-    "Deflection by shear counts where the job file makes members flexible in shear (analysis: "
-    "shear_flexible). Not covered: camber, slip of connections, vibration."
+    "Deflection by shear is included, with G of the material and five sixths of the area. Not "
+    "covered: camber, slip of connections, vibration."
 )
