@@ -7,7 +7,8 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
-from typing import TypeVar, overload
+from functools import partial
+from typing import NamedTuple, TypeVar, overload
 
 import numpy as np
 from numpy.typing import NDArray
@@ -100,6 +101,14 @@ class ReactionEnvelope:
     horizontal_min: Extreme = Extreme(0.0)
     moment_max: Extreme = Extreme(0.0)
     moment_min: Extreme = Extreme(0.0)
+
+
+class ReactionBounds(NamedTuple):
+    """Lowest and highest vertical, horizontal reaction and moment at a joint: N, N, N·m."""
+
+    joint: int
+    lowest: Sequence[float]
+    highest: Sequence[float]
 
 
 @dataclass(frozen=True, slots=True)
@@ -205,6 +214,35 @@ class MemberEnvelopes:
         )
 
 
+class MemberRows(OnRequest[MemberEnvelope]):
+    """The members of one line, each a row of one of several blocks of envelopes."""
+
+    __slots__ = ("_blocks", "_places")
+
+    def __init__(
+        self,
+        blocks: Sequence[MemberEnvelopes],
+        places: Sequence[tuple[int, int]],
+        count: int,
+        first: int,
+    ) -> None:
+        super().__init__(partial(_member, blocks, places), count, first)
+        self._blocks = blocks
+        self._places = places
+
+    def place(self, member: int) -> tuple[MemberEnvelopes, int]:
+        """Return the block that holds a member, and its row in that."""
+        block, row = self._places[self._numbers[member]]
+        return self._blocks[block], row
+
+
+def _member(
+    blocks: Sequence[MemberEnvelopes], places: Sequence[tuple[int, int]], number: int
+) -> MemberEnvelope:
+    block, row = places[number]
+    return blocks[block][row]
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class ReactionEnvelopes:
     """Governing reactions at S supports of many lines: joint (S) its number in its line.
@@ -219,6 +257,42 @@ class ReactionEnvelopes:
     def __getitem__(self, s: int) -> ReactionEnvelope:
         both = (each[3 * s + i] for i in range(3) for each in (self.highest, self.lowest))
         return ReactionEnvelope(int(self.joint[s]), *both)
+
+
+class ReactionRows(OnRequest[ReactionEnvelope]):
+    """The supports of one line, rows of a block."""
+
+    __slots__ = ("_block",)
+
+    def __init__(self, block: ReactionEnvelopes, count: int, first: int) -> None:
+        super().__init__(block.__getitem__, count, first)
+        self._block = block
+
+    def bounds(self) -> list[ReactionBounds]:
+        """Return the values alone."""
+        rows = slice(self._numbers.start, self._numbers.stop)
+        values = slice(3 * rows.start, 3 * rows.stop)
+        joints = self._block.joint[rows].tolist()
+        low, high = (
+            each.value[values].reshape(-1, 3).tolist()
+            for each in (self._block.lowest, self._block.highest)
+        )
+        return list(map(ReactionBounds, joints, low, high))
+
+
+def reaction_bounds(envelope: LineEnvelope) -> list[ReactionBounds]:
+    """Return the lowest and highest reactions at every support."""
+    found = envelope.reactions
+    if isinstance(found, ReactionRows):
+        return found.bounds()
+    return [
+        ReactionBounds(
+            r.joint,
+            [float(e.value) for e in (r.vertical_min, r.horizontal_min, r.moment_min)],
+            [float(e.value) for e in (r.vertical_max, r.horizontal_max, r.moment_max)],
+        )
+        for r in found
+    ]
 
 
 @dataclass(frozen=True, slots=True, eq=False)

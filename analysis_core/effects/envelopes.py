@@ -5,7 +5,6 @@ from __future__ import annotations
 import itertools
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import replace
-from functools import partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -22,11 +21,11 @@ from analysis_core.results import (
     Extremes,
     LineEnvelope,
     LineSolution,
-    MemberEnvelope,
     MemberEnvelopes,
+    MemberRows,
     OnRequest,
-    ReactionEnvelope,
     ReactionEnvelopes,
+    ReactionRows,
 )
 
 Floats = NDArray[np.float64]
@@ -167,7 +166,7 @@ def _member_envelopes(
     solutions: Sequence[LineSolution],
     tables: Mapping[str, FactorTable],
     count: int,
-) -> dict[str, list[OnRequest[MemberEnvelope]]]:
+) -> dict[str, list[MemberRows]]:
     """The envelopes of the members of each line by limit state."""
     lines = [spans.line for spans in batch]
     first = np.cumsum([0, *(len(line.members) for line in lines)])
@@ -185,21 +184,14 @@ def _member_envelopes(
             swept = sweep(block, table, count)
             effects = _named((swept.moment, swept.shear, swept.deflection), table, parts)
             found[state].append(MemberEnvelopes(block.member, x, *effects))
-    places = where.tolist()
+    places = list(map(tuple, where.tolist()))
     return {
         state: [
-            OnRequest(partial(_member, blocks, places), len(line.members), low)
+            MemberRows(blocks, places, len(line.members), low)
             for line, low in zip(lines, first.tolist(), strict=False)
         ]
         for state, blocks in found.items()
     }
-
-
-def _member(
-    blocks: Sequence[MemberEnvelopes], places: Sequence[tuple[int, int]], number: int
-) -> MemberEnvelope:
-    block, b = places[number]
-    return blocks[block][b]
 
 
 def _named(
@@ -233,7 +225,7 @@ def named_extremes(
 
 def _reactions(
     batch: Sequence[SpanCases], solutions: Sequence[LineSolution], table: FactorTable
-) -> list[OnRequest[ReactionEnvelope]]:
+) -> list[ReactionRows]:
     values = np.concatenate([s.reactions for s in solutions], axis=1)
     supported = [[j for j in spans.line.joints if j.support is not None] for spans in batch]
     first = np.cumsum([0, *(len(spans.line.joints) for spans in batch)]).tolist()
@@ -253,7 +245,7 @@ def _reactions(
     )
     counts = [len(own) for own in supported]
     return [
-        OnRequest(found.__getitem__, count, low)
+        ReactionRows(found, count, low)
         for count, low in zip(counts, itertools.accumulate(counts, initial=0), strict=False)
     ]
 

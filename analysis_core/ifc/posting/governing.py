@@ -124,8 +124,6 @@ def element_effects(element: str, parts: Sequence[Part]) -> ElementEffects | Non
     Moments and shears govern over every limit state; deflections over serviceability, and over
     strength only where nothing else was analysed.
     """
-    if len(parts) == 1 and (alone := _alone(element, parts[0])) is not None:
-        return alone
     ordered = sorted(parts, key=lambda part: part.start)
     found = [each for part in ordered for each in _envelopes(part)]
     if not found:
@@ -155,45 +153,6 @@ def element_effects(element: str, parts: Sequence[Part]) -> ElementEffects | Non
         _end_range(found, ordered[-1], at_start=False),
         tuple(_curves(found)),
     )
-
-
-def _alone(element: str, part: Part) -> ElementEffects | None:
-    """The same for what most elements are: one whole member, both limit states analysed."""
-    result, member = part
-    strength, service = result.envelopes.get(STRENGTH), result.envelopes.get(SERVICEABILITY)
-    if strength is None or service is None or len(result.envelopes) > 2:
-        return None
-    if member.reversed_ or member.element_offset:
-        return None
-    u, s = strength.members[member.id], service.members[member.id]
-    if u.member != member.id or s.member != member.id or not u.x.size or not s.x.size:
-        return None
-    return ElementEffects(
-        element,
-        (result,),
-        u.sagging if u.sagging.value >= s.sagging.value else s.sagging,
-        u.hogging if u.hogging.value <= s.hogging.value else s.hogging,
-        _larger(_larger(u.shear_max, u.shear_min), _larger(s.shear_max, s.shear_min)),
-        _larger(s.deflection_down, s.deflection_up),
-        _both(u.start_moment, s.start_moment),
-        _both(u.end_moment, s.end_moment),
-        (
-            Curve("MomentMax", u.x, u.moment_max),
-            Curve("MomentMin", u.x, u.moment_min),
-            Curve("ShearMax", u.x, u.shear_max_at),
-            Curve("ShearMin", u.x, u.shear_min_at),
-            Curve("DeflectionMax", s.x, s.deflection_max),
-            Curve("DeflectionMin", s.x, s.deflection_min),
-        ),
-    )
-
-
-def _larger(first: Extreme, second: Extreme) -> Extreme:
-    return first if abs(first.value) >= abs(second.value) else second
-
-
-def _both(first: tuple[float, float], second: tuple[float, float]) -> tuple[float, float]:
-    return min(first[0], second[0]), max(first[1], second[1])
 
 
 def _envelopes(part: Part) -> list[_Found]:

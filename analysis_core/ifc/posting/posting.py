@@ -19,6 +19,7 @@ from analysis_core.ifc.posting import clearing
 from analysis_core.ifc.posting.diagrams import DiagramWriter
 from analysis_core.ifc.posting.find_elements import find_elements
 from analysis_core.ifc.posting.governing import ElementEffects, Part, element_effects, element_parts
+from analysis_core.ifc.posting.lone_members import lone_members
 from analysis_core.ifc.posting.measures import file_units, measures
 from analysis_core.ifc.posting.owner import owner_history
 from analysis_core.ifc.posting.property_sets import (
@@ -33,7 +34,7 @@ from analysis_core.ifc.posting.property_sets import (
 from analysis_core.ifc.posting.result_groups import ResultGroups, reaction_id, rewritten_ids
 from analysis_core.ifc.posting.section_forces import CaseStations
 from analysis_core.ifc.posting.set_contents import contents_in_block, timeless
-from analysis_core.ifc.posting.support_reactions import support_reactions, write_reactions
+from analysis_core.ifc.posting.support_reactions import ReactionsWriter, support_reactions
 from analysis_core.ifc.step import append
 from analysis_core.ifc.step.container import Container
 from analysis_core.ifc.step.index import StepIndex
@@ -217,10 +218,11 @@ class Posting:
                     sets.add(found.element, DIAGRAMS, tables)
                 record.write(found.element, found.results, self._members(found.element))
             yield begin
+        bearing = ReactionsWriter(sets)
         for element, reactions in self._supports.items():
             if element in self._elements:
                 if reactions.finite:
-                    write_reactions(reactions, sets)
+                    bearing.write(reactions)
                 else:
                     self._findings.append(_not_finite(element, None))
         yield len(known)
@@ -235,8 +237,9 @@ class Posting:
     ) -> list[ElementEffects]:
         """What governs these elements, those left out whose values are no numbers."""
         batch = []
+        lone = lone_members(elements)
         for element, parts in elements:
-            found = element_effects(element, parts)
+            found = lone.get(element) or element_effects(element, parts)
             if found is None:
                 results = list({id(p.result): p.result for p in parts}.values())
                 record.write(element, results, self._members(element))

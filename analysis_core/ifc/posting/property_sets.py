@@ -16,7 +16,7 @@ from analysis_core import __version__
 from analysis_core.findings import Finding
 from analysis_core.ifc.global_ids import derived_ids
 from analysis_core.ifc.posting.governing import ElementEffects
-from analysis_core.ifc.posting.measures import Measure, Measures
+from analysis_core.ifc.posting.measures import Measures
 from analysis_core.ifc.step.append import Lines
 from analysis_core.ifc.step.values import label, real, reals, string
 from analysis_core.results import LineResult
@@ -88,20 +88,6 @@ class SetWriter:
     def text(self, name: str, kind: str, text: str) -> int:
         """Return a property that holds a text; equal ones are written once."""
         return self.lines.shared(f"IFCPROPERTYSINGLEVALUE('{name}',$,{kind}({label(text)}),$)")
-
-    def single(self, name: str, si: float, measure: Measure) -> int:
-        """Add a property with one measure; ``name`` may be any text."""
-        return self.lines.add(
-            f"IFCPROPERTYSINGLEVALUE({label(name)},$,{measure.typed(si)},{measure.unit})"
-        )
-
-    def bounded(self, name: str, bounds: tuple[float, float], measure: Measure) -> int:
-        """Add a property with a lower and an upper bound."""
-        low, high = bounds
-        return self.lines.add(
-            f"IFCPROPERTYBOUNDEDVALUE('{name}',$,{measure.typed(high)},{measure.typed(low)},"
-            f"{measure.unit}{self.bounded_end}"
-        )
 
 
 class EffectsWriter:

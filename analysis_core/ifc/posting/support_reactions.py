@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Container, Iterable
 from dataclasses import dataclass, field
 
 from analysis_core.ifc.posting.governing import STRENGTH, tied_elements
 from analysis_core.ifc.posting.property_sets import REACTIONS, SetWriter
-from analysis_core.ifc.step.values import LABEL_LENGTH
-from analysis_core.results import LineResult, Outcome, ReactionEnvelope
+from analysis_core.ifc.step.values import LABEL_LENGTH, label, reals
+from analysis_core.results import LineResult, Outcome, ReactionBounds, reaction_bounds
 
 Bounds = tuple[float, float]
 
@@ -60,7 +61,7 @@ def support_reactions(outcome: Outcome) -> dict[str, SupportReactions]:
         if result.status != "balanced":
             continue
         envelope = result.envelopes.get(STRENGTH)
-        by_joint = {r.joint: r for r in envelope.reactions} if envelope is not None else {}
+        by_joint = {r.joint: r for r in reaction_bounds(envelope)} if envelope is not None else {}
         for joint in result.line.joints:
             if joint.support is None or not joint.element:
                 continue
@@ -72,29 +73,77 @@ def support_reactions(outcome: Outcome) -> dict[str, SupportReactions]:
     return found
 
 
-def write_reactions(found: SupportReactions, sets: SetWriter) -> None:
-    """Write Spanledger_Reactions, if anything is known.
+class ReactionsWriter:
+    """Writes Spanledger_Reactions, all lines of a set by one format string.
 
     ``Vertical`` bounds the sum of all lines.  ``Horizontal`` and ``Moment`` are there where the
     support gives such a reaction at all.
     """
-    m = sets.measures
-    numbers = []
-    for component in _COMPONENTS:
-        bounds = found.total(component)
-        if bounds is not None and (component == "Vertical" or any(bounds)):
-            measure = m.torque if component == "Moment" else m.force
-            numbers.append(sets.bounded(component, bounds, measure))
-    taken: set[str] = set(_COMPONENTS)
-    for (mark, case), value in found.cases.items():
-        name = _distinct(f"{mark} / {case}", taken)
-        taken.add(name)
-        numbers.append(sets.single(name, value, m.force))
-    if numbers:
-        sets.add(found.element, REACTIONS, numbers)
+
+    def __init__(self, sets: SetWriter) -> None:
+        self._sets = sets
+        self._forms: dict[tuple[object, ...], str] = {}
+
+    def write(self, found: SupportReactions) -> None:
+        """Write the set of one element, if anything is known."""
+        measures = self._sets.measures
+        values: list[float] = []
+        components = []
+        for component in _COMPONENTS:
+            bounds = found.total(component)
+            if bounds is not None and (component == "Vertical" or any(bounds)):
+                factor = measures.torque.factor if component == "Moment" else measures.force.factor
+                values += (bounds[1] / factor, bounds[0] / factor)
+                components.append(component)
+        values += [value / measures.force.factor for value in found.cases.values()]
+        if not values:
+            return
+        numbers = iter(reals(values))
+        n = self._sets.lines.next
+        filled: list[object] = []
+        for _ in components:
+            filled += (n, next(numbers), next(numbers))
+            n += 1
+        for text in numbers:
+            filled += (n, text)
+            n += 1
+        own_id, relation_id, element = self._sets.ids(found.element, REACTIONS)
+        filled += (n, own_id, *range(self._sets.lines.next, n), n + 1, relation_id, element, n)
+        form = self._form(tuple(components), tuple(found.cases))
+        self._sets.lines.add_text(form % tuple(filled), n + 2 - self._sets.lines.next)
+
+    def _form(self, components: tuple[str, ...], cases: tuple[tuple[str, str], ...]) -> str:
+        """The set with these properties; supports of one line mostly have the same."""
+        form = self._forms.get((components, cases))
+        if form is None:
+            m, end = self._sets.measures, self._sets.bounded_end
+            bodies = []
+            for component in components:
+                each = m.torque if component == "Moment" else m.force
+                bodies.append(
+                    f"IFCPROPERTYBOUNDEDVALUE('{component}',$,{each.kind}(%s),{each.kind}(%s),"
+                    f"{each.unit}{end}"
+                )
+            for name in _names(cases):
+                literal = label(name).replace("%", "%%")
+                bodies.append(
+                    f"IFCPROPERTYSINGLEVALUE({literal},$,{m.force.kind}(%s),{m.force.unit})"
+                )
+            references = ",".join(["#%d"] * len(bodies))
+            form = self._sets.lines.form([*bodies, *self._sets.forms(REACTIONS, references)])
+            self._forms[components, cases] = form
+        return form
 
 
-def _distinct(name: str, taken: set[str]) -> str:
+def _names(cases: Iterable[tuple[str, str]]) -> list[str]:
+    """Names of properties, all different: "L1-01 / Dead"."""
+    taken: dict[str, None] = dict.fromkeys(_COMPONENTS)
+    for mark, case in cases:
+        taken[_distinct(f"{mark} / {case}", taken)] = None
+    return list(taken)[len(_COMPONENTS) :]
+
+
+def _distinct(name: str, taken: Container[str]) -> str:
     """Return a name of permitted length that no other property of the set has."""
     short, number = name[:LABEL_LENGTH], 1
     while short in taken:
@@ -108,18 +157,14 @@ def _add(
     entry: SupportReactions,
     result: LineResult,
     joint: int,
-    envelope: ReactionEnvelope | None,
+    bounds: ReactionBounds | None,
 ) -> None:
     mark = result.line.mark
-    if envelope is not None:
-        for component, low, high in (
-            ("Vertical", envelope.vertical_min, envelope.vertical_max),
-            ("Horizontal", envelope.horizontal_min, envelope.horizontal_max),
-            ("Moment", envelope.moment_min, envelope.moment_max),
-        ):
+    if bounds is not None:
+        for component, low, high in zip(_COMPONENTS, bounds.lowest, bounds.highest, strict=True):
             by_line = entry.bounds.setdefault(component, {})
             before = by_line.get(mark, (0.0, 0.0))
-            by_line[mark] = before[0] + float(low.value), before[1] + float(high.value)
+            by_line[mark] = before[0] + low, before[1] + high
     if result.solution is not None:
         vertical = result.solution.reactions[:, joint, 1].tolist()
         for case, value in zip(result.solution.cases, vertical, strict=True):
