@@ -138,7 +138,7 @@ def test_a_new_action_and_another_support_are_named(line):
             ImposedCurvature("G", 1, 0.0, 4.5, 1.5e-4),
             ["ImposedCurvature", "1", "0", "4.5", "0.00015"],
         ),
-        (JointForce("G", 2, 1e3, -2e3, 0.0), ["JointForce", 2, "1000", "-2000", "0"]),
+        (JointForce("G", 2, 1e3, -2e3, -0.0), ["JointForce", 2, "1000", "-2000", "0"]),
         (JointMovement("G", 1, vertical=8e-3), ["JointMovement", 1, "0", "0.008", "0"]),
     ],
 )

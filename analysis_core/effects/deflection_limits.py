@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 
 from analysis_core.effects.arrangements import Arrangements, SpanCases
 from analysis_core.effects.envelopes import in_order, named_extremes, tables
-from analysis_core.effects.factors import FactorTable
+from analysis_core.effects.factors import FactorTable, parts_of
 from analysis_core.effects.fields import end_movements, fields
 from analysis_core.effects.sweep import sweep_effect
 from analysis_core.model import Combination, Line, Member
@@ -154,9 +154,10 @@ def _extremes(
     lines = [spans.line for spans in batch]
     moved = end_movements(lines, solutions) - _of_supports(lines, solutions)
     out: list[dict[int, tuple[Extreme, Extreme]]] = [{} for _ in lines]
+    of_lines = parts_of(batch)
     for block in fields(lines, solutions, movements=moved):
         swept = sweep_effect(block, block.deflection, table, _STATIONS)
-        parts = [batch[i].parts for i in block.line.tolist()]
+        parts = of_lines.taken(block.line)
         down = named_extremes(swept.highest, table, parts, largest=True)
         up = named_extremes(swept.lowest, table, parts, largest=False)
         numbers = zip(block.line.tolist(), block.member.tolist(), strict=True)

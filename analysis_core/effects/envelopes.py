@@ -9,9 +9,9 @@ from dataclasses import replace
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.effects.arrangements import Arrangements, Part, SpanCases
+from analysis_core.effects.arrangements import Arrangements, SpanCases
 from analysis_core.effects.extremes import Peaks
-from analysis_core.effects.factors import FactorTable, factor_table
+from analysis_core.effects.factors import FactorTable, PartsOf, factor_table, parts_of
 from analysis_core.effects.fields import fields
 from analysis_core.effects.sampling import both
 from analysis_core.effects.sweep import Swept, sweep
@@ -173,12 +173,13 @@ def _member_envelopes(
     # Of every member of all lines in order: its block, and its number in that.
     where = np.empty((first[-1], 2), dtype=np.int64)
     found: dict[str, list[MemberEnvelopes]] = {state: [] for state in tables}
+    of_lines = parts_of(batch)
     for number, block in enumerate(fields(lines, solutions)):
         size = len(block.line)
         where[first[block.line] + block.member] = np.column_stack(
             [np.full(size, number), np.arange(size)]
         )
-        parts = [batch[i].parts for i in block.line.tolist()]
+        parts = of_lines.taken(block.line)
         x = _settled(np.linspace(0.0, 1.0, count)[:, None] * block.length)
         for state, table in tables.items():
             swept = sweep(block, table, count)
@@ -194,9 +195,7 @@ def _member_envelopes(
     }
 
 
-def _named(
-    effects: Sequence[Swept], table: FactorTable, parts: Sequence[tuple[Part, ...]]
-) -> list[EffectEnvelope]:
+def _named(effects: Sequence[Swept], table: FactorTable, parts: PartsOf) -> list[EffectEnvelope]:
     return [
         EffectEnvelope(
             highest=named_extremes(effect.highest, table, parts, largest=True),
@@ -215,9 +214,7 @@ def _settled(values: Floats) -> Floats:
     return out
 
 
-def named_extremes(
-    peaks: Peaks, table: FactorTable, parts: Sequence[tuple[Part, ...]], *, largest: bool
-) -> Extremes:
+def named_extremes(peaks: Peaks, table: FactorTable, parts: PartsOf, *, largest: bool) -> Extremes:
     """Return the extremes of B members; ``parts`` are those of the line that each belongs to."""
     sources = table.sources(peaks.row, peaks.contributions, parts, largest=largest)
     return Extremes(peaks.value, peaks.x, sources)
@@ -232,11 +229,8 @@ def _reactions(
     chosen = [low + j.id for low, own in zip(first, supported, strict=False) for j in own]
     flat = values[:, chosen][..., [1, 0, 2]].reshape(len(values), -1)  # (C, supports * 3)
     x = np.repeat([j.x for own in supported for j in own], 3)
-    parts = [
-        spans.parts
-        for spans, own in zip(batch, supported, strict=True)
-        for _ in range(3 * len(own))
-    ]
+    owner = np.repeat(np.arange(len(batch)), [3 * len(own) for own in supported])
+    parts = parts_of(batch).taken(owner)
     high, low = both(flat[None], table)
     found = ReactionEnvelopes(
         np.array([j.id for own in supported for j in own], dtype=np.int64),
@@ -256,7 +250,7 @@ def _where_acting(
     flat: Floats,
     x: Floats,
     table: FactorTable,
-    parts: Sequence[tuple[Part, ...]],
+    parts: PartsOf,
 ) -> Extremes:
     """Of values (N, R) by row of the table the one that ``pick`` picks; nothing where none acts."""
     acting = flat.any(axis=0)

@@ -15,7 +15,7 @@ from numpy.typing import NDArray
 
 from analysis_core.effects.arrangements import Arrangements, SpanCases
 from analysis_core.effects.envelopes import span_numbers
-from analysis_core.effects.factors import FactorTable, factor_table
+from analysis_core.effects.factors import FactorTable, PartsOf, factor_table
 from analysis_core.effects.fields import Fields, fields, sample
 from analysis_core.effects.fixed_ends import full_fixed_end_moments
 from analysis_core.effects.sampling import both
@@ -156,6 +156,6 @@ def _along(block: Fields, b: int, order: Sequence[int]) -> Callable[[float], Flo
 def _lowest(parts: Floats, x: float, table: FactorTable) -> Extreme:
     _, low = both(parts[:, None], table)
     row = int(np.argmin(low[:, 0]))
-    rows = np.array([row])
-    (source,) = table.sources(rows, parts[:, None], [table.parts], largest=False)
+    own = PartsOf([table.parts], np.array([0]))
+    (source,) = table.sources(np.array([row]), parts[:, None], own, largest=False)
     return Extreme(float(low[row, 0]), x, source)

@@ -15,7 +15,13 @@ from functools import cache
 import numpy as np
 from numpy.typing import NDArray
 
-from analysis_core.effects.arrangements import Arrangements, Part, PatternRule, loaded_spans
+from analysis_core.effects.arrangements import (
+    Arrangements,
+    Part,
+    PatternRule,
+    SpanCases,
+    loaded_spans,
+)
 from analysis_core.model import Combination
 from analysis_core.results import OnRequest
 
@@ -23,6 +29,32 @@ Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
 _ROOM_FOR_A_BYTE = 2**54  # so much, and a byte more, is an integer of 63 bits
 _NO_MATTER = 1e-9  # a part that contributes less than this of an effect is not named
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class PartsOf:
+    """The parts of the line that each of B extremes belongs to.
+
+    ``distinct``: those of the lines, each tuple once; ``number`` (B): which of them.
+    """
+
+    distinct: Sequence[tuple[Part, ...]]
+    number: Integers
+
+    def __getitem__(self, b: int) -> tuple[Part, ...]:
+        return self.distinct[int(self.number[b])]
+
+    def taken(self, index: Integers) -> PartsOf:
+        """Return the parts of extremes that belong to these."""
+        return PartsOf(self.distinct, self.number[index])
+
+
+def parts_of(lines: Sequence[SpanCases]) -> PartsOf:
+    """Return the parts of each line."""
+    numbers: dict[int, int] = {}  # lines that are split alike share one tuple
+    number = [numbers.setdefault(id(line.parts), len(numbers)) for line in lines]
+    distinct = {id(line.parts): line.parts for line in lines}
+    return PartsOf(list(distinct.values()), np.array(number, dtype=np.int64))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -56,7 +88,7 @@ class FactorTable:
         self,
         rows: Integers,
         contributions: Floats,
-        parts: Sequence[tuple[Part, ...]],
+        parts: PartsOf,
         *,
         largest: bool,
     ) -> Sequence[str]:
@@ -65,8 +97,8 @@ class FactorTable:
         For example "U2 (Q on spans 1, 3)".
 
         ``rows`` (B) of the table; ``contributions`` (C, B) are the unfactored effects of the parts
-        at the place of the extreme, which is the ``largest`` value or the least.  ``parts`` (B) are
-        the parts of the line that each belongs to; the table serves lines alike.
+        at the place of the extreme, which is the ``largest`` value or the least.  ``parts`` are
+        those of the line that each belongs to; the table serves lines alike.
         """
         named = zip(self.names, self.labels, strict=True)
         plain = [f"{name} ({label})" if label else name for name, label in named]
@@ -108,18 +140,14 @@ class FactorTable:
 
 
 def _patterns(
-    rows: Integers,
-    full: NDArray[np.bool_],
-    matters: NDArray[np.bool_],
-    parts: Sequence[tuple[Part, ...]],
+    rows: Integers, full: NDArray[np.bool_], matters: NDArray[np.bool_], parts: PartsOf
 ) -> tuple[Integers, Integers]:
     """Of B extremes the first of each that the same words fit, and the pattern of every one (B).
 
     The same words fit where row, marks (C, B) and parts are the same.
     """
-    own = {id(each): i for i, each in enumerate({id(p): p for p in parts}.values())}
-    pattern = rows * len(own) + np.array([own[id(each)] for each in parts], dtype=np.int64)
-    bound = (int(rows.max(initial=0)) + 1) * max(1, len(own))
+    pattern = rows * len(parts.distinct) + parts.number
+    bound = (int(rows.max(initial=0)) + 1) * max(1, len(parts.distinct))
     for byte in np.packbits(np.concatenate([full, matters]), axis=0).astype(np.int64):
         if bound > _ROOM_FOR_A_BYTE:
             pattern = np.unique(pattern, return_inverse=True)[1]

@@ -16,6 +16,7 @@ import math
 import re
 from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import fields
+from functools import cache
 from operator import attrgetter
 from typing import Any, get_args
 
@@ -23,8 +24,6 @@ from analysis_core.model import (
     Action,
     Combination,
     JointAction,
-    JointForce,
-    JointMovement,
     Line,
     Material,
     Member,
@@ -87,6 +86,7 @@ class Bases:
                 [repr(settings.rules), repr(settings.analysis), repr(settings.limits)]
             ),
         }
+        self._actions: dict[Hashable, str] = {}
         self._sections: dict[Hashable, str] = {}
         self._materials: dict[Material | None, str] = {}
 
@@ -104,11 +104,18 @@ class Bases:
         for action in line.actions:
             by_case.setdefault(action.case, []).append(action)
         for case in sorted(by_case):
-            texts[f"actions {case}"] = _actions(by_case[case])
+            texts[f"actions {case}"] = self._actions_of(by_case[case])
         texts |= self._common
         for mark, print_ in received.items():
             texts[f"received {mark}"] = print_
         return texts
+
+    def _actions_of(self, actions: Sequence[Action]) -> str:
+        key = tuple([(type(action), _VALUES[type(action)](action)) for action in actions])
+        text = self._actions.get(key)
+        if text is None:
+            text = self._actions[key] = _actions(actions)
+        return text
 
     def _section(self, member: Member) -> str:
         key = member.pieces, member.section
@@ -223,16 +230,27 @@ def _actions(actions: Sequence[Action]) -> str:
 def _action(action: Action) -> str:
     """Kind and values as a JSON list, put together by hand: there are very many of them."""
     kind = type(action)
-    values = [_value(value) for value in _VALUES[kind](action)]
-    if isinstance(action, JointForce | JointMovement):
-        values[0] = str(action.joint)
-    return f'["{kind.__name__}", {", ".join(values)}]'
+    numbers: list[float] = []
+    lengths: list[int] = []
+    for value in _VALUES[kind](action):
+        if isinstance(value, tuple):
+            numbers += value
+            lengths.append(len(value))
+        else:
+            numbers.append(value)
+    form = _form(kind.__name__, len(numbers) - sum(lengths), tuple(lengths))
+    # Adding nothing leaves no minus before a zero.
+    return form % tuple([number + 0.0 for number in numbers])
 
 
-def _value(value: float | tuple[float, ...]) -> str:
-    if isinstance(value, tuple):
-        return f"[{', '.join(map(_value, value))}]"
-    return f'"{_nine(value)}"'
+@cache
+def _form(kind: str, count: int, lengths: tuple[int, ...]) -> str:
+    """The JSON of an action with places for ``count`` numbers and for lists behind them."""
+    items = ['"%.9g"'] * count
+    if kind.startswith("Joint"):
+        items[0] = "%d"  # its number
+    items += ["[" + ", ".join(['"%.9g"'] * length) + "]" for length in lengths]
+    return f'["{kind}", {", ".join(items)}]'
 
 
 def _join(texts: dict[str, str], key: str, text: str) -> None:

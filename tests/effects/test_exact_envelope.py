@@ -17,7 +17,7 @@ from analysis_core.effects.arrangements import (
 )
 from analysis_core.effects.combinations import combine, combine_line
 from analysis_core.effects.envelopes import envelope, envelopes
-from analysis_core.effects.factors import factor_table
+from analysis_core.effects.factors import PartsOf, factor_table
 from analysis_core.effects.fields import fields as diagrams
 from analysis_core.effects.stations import stations
 from analysis_core.effects.survey import survey, values_only
@@ -513,7 +513,10 @@ def test_a_part_without_influence_is_not_named():
     table = factor_table(q, parts, EVERY, (1, 2, 3))
 
     (source,) = table.sources(
-        np.array([0]), np.array([[5.0e3], [1e-9], [-2.0e3]]), [parts], largest=True
+        np.array([0]),
+        np.array([[5.0e3], [1e-9], [-2.0e3]]),
+        PartsOf([parts], np.array([0])),
+        largest=True,
     )
 
     assert source == "U1 (Q on span 1)"
@@ -532,13 +535,15 @@ def test_extremes_of_many_parts_are_named_together_as_each_alone():
     contributions = rng.normal(size=(70, 40))
     contributions[:, 20:] = contributions[:, :20]  # every second half needs the words of the first
     rows = np.tile(rng.integers(3, size=20), 2)
-    parts = [lines[b % 2] for b in range(40)]
+    parts = PartsOf(lines, np.arange(40) % 2)
 
     together = table.sources(rows, contributions, parts, largest=True)
 
     for b in range(40):
         one = slice(b, b + 1)
-        (alone,) = table.sources(rows[one], contributions[:, one], parts[one], largest=True)
+        (alone,) = table.sources(
+            rows[one], contributions[:, one], parts.taken(np.array([b])), largest=True
+        )
         on = np.flatnonzero(contributions[:, b] > 0.0)
         places = ", ".join(f"{'' if b % 2 == 0 else 'x '}{n}" for n in on)
         assert together[b] == alone
