@@ -13,9 +13,9 @@ METRIC = display_units("metric", {})
 LENGTH = 6.4
 
 
-def row(action):
+def row(action, shear=None):
     joints = (Joint(0, 0.0, 0.0, (0.0, 0.0, 0.0)), Joint(1, LENGTH, 0.0, (LENGTH, 0.0, 0.0)))
-    member = Member(0, 0, 1, (Piece(LENGTH, (1e7,)),))
+    member = Member(0, 0, 1, (Piece(LENGTH, (1e7,), shear=shear),))
     ((_, _, formula, start, end),) = fixed_end_rows(Line("L", joints, (member,), (action,)), METRIC)
     return formula, float(start), float(end)
 
@@ -55,3 +55,15 @@ def test_a_load_that_grows_along_the_member_by_its_closed_form():
     assert (w1, w2) == pytest.approx((2.0, 2.0 + 1.5 * LENGTH), abs=0.006)
     assert -(3 * w1 + 2 * w2) * span**2 / 60 == pytest.approx(start, abs=0.02)
     assert (2 * w1 + 3 * w2) * span**2 / 60 == pytest.approx(end, abs=0.02)
+
+
+def test_shear_lowers_what_both_ends_turn_alike_and_nothing_else():
+    """Both moments in one sense over 1 + Φ: 12 EI/(G A_s L²) = 12 · 1e7/(3e7 · 6.4²)."""
+    load = DistributedForce("G", 0, 1.1, 3.9, (7.3e3,))
+    _, start, end = row(load)
+    formula, start_, end_ = row(load, shear=(3e7,))
+    phi = float(re.search(r"Φ = ([\d.]+)", formula)[1])
+    assert phi == pytest.approx(12e7 / (3e7 * LENGTH**2), abs=5e-5)
+    turned, alike = (start - end) / 2, (start + end) / (2 * (1 + phi))
+    assert (start_, end_) == pytest.approx((turned + alike, -turned + alike), abs=0.02)
+    assert "Φ" not in row(DistributedForce("G", 0, 0.0, LENGTH, (7.3e3,)), shear=(3e7,))[0]

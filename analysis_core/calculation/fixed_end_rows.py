@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from analysis_core.distribution.fixed_end import end_actions
 from analysis_core.model import (
     DistributedForce,
@@ -9,6 +11,7 @@ from analysis_core.model import (
     Line,
     Member,
     MemberAction,
+    Piece,
     PointForce,
     PointMoment,
 )
@@ -70,7 +73,13 @@ def _formula(member: Member, action: MemberAction, units: DisplayUnits) -> str:
     length = member.length
     span = units.number(length, "length")
     if not member.prismatic:
-        return "by integration along the member, whose rigidity varies"
+        shear = shear_parameter(member)
+        if shear is None:
+            return "by integration along the member, whose rigidity varies"
+        rigid = _formula(replace(member, pieces=(_rigid(member),)), action, units)
+        if isinstance(action, DistributedForce) and "L²/12 =" in rigid:
+            return rigid  # the same at both ends: shear changes nothing
+        return f"{rigid}; of A and B so: (A - B)/2 ± (A + B)/(2 (1 + Φ)), Φ = {shear:.4f}"
     match action:
         case DistributedForce() if _uniform(action) and _whole(action, length):
             w = units.number(action.transverse[0], "line load")
@@ -107,6 +116,25 @@ def _part_formula(action: DistributedForce, length: float, units: DisplayUnits) 
             f"{span}²/60"
         )
     return f"∓ ∫ w s (L-s)²/L² ds and ± ∫ w s² (L-s)/L² ds from {a} to {b}, L = {span}"
+
+
+def shear_parameter(member: Member) -> float | None:
+    """Return Φ = 12 EI/(G A_s L²) of a member that bends and shears alike all along, else None."""
+    first = member.pieces[0]
+    alike = all(
+        piece.shear is not None
+        and first.shear is not None
+        and len(piece.shear) == len(piece.flexural) == 1
+        and (piece.shear, piece.flexural, piece.power) == (first.shear, first.flexural, first.power)
+        for piece in member.pieces
+    )
+    if not alike or first.shear is None:
+        return None
+    return 12.0 * first.flexural_at(0.0) / (first.shear[0] * member.length**2)
+
+
+def _rigid(member: Member) -> Piece:
+    return replace(member.pieces[0], length=member.length, shear=None)
 
 
 def _uniform(action: DistributedForce) -> bool:

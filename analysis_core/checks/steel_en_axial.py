@@ -91,9 +91,8 @@ def _section(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
     w.step("N_Ed", "", force, "force", "", note="tension positive, the largest along the member")
     share = w.step("n", "{N_Ed} / {N_pl}", abs(force) / squash, "", "6.2.9.1",
                    N_Ed=(abs(force), "force"), N_pl=(squash, "force"))  # fmt: skip
-    linear = class_ > 2 or design.section.shape not in ("I", "hollow rectangle")
-    clause = "6.2.1(7)" if linear else "6.2.9.1(4), (5)"
-    w.step("M_N,Rd", "", reduced, "moment", clause, note="with shear above one half, 6.2.10")
+    full = reduced_moment_at(design, f, fy, class_, field, x)
+    _reduced_step(design, w, class_, share, full, reduced)
     if share >= abs(moment) / reduced if reduced > 0.0 else True:
         return w.check("axial force", "EN 1993-1-1, 6.2.3, 6.2.4", demand=force, resistance=squash,
                        quantity="force", x=x, source=field.source,
@@ -101,6 +100,46 @@ def _section(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
     return w.check("bending with axial force", "EN 1993-1-1, 6.2.9", demand=moment,
                    resistance=reduced, quantity="moment", x=x, source=field.source,
                    not_covered=_NOT_COVERED)  # fmt: skip
+
+
+def reduced_moment_at(
+    design: MemberDesign, f: Figures, fy: float, class_: int, field: EffectField, x: float
+) -> float:
+    """Return M_V,Rd at a place of a field, N·m: the moment without axial force."""
+    acting = abs(float(field.shear[int(np.abs(field.x - x).argmin())]))
+    share = acting / shear_resistance_of(design, f, fy, Working())
+    return reduced_moment(design, f, fy, class_, share)
+
+
+def _reduced_step(
+    design: MemberDesign,
+    w: Working,
+    class_: int,
+    share: float,
+    full: float,
+    value: float,
+) -> None:
+    """Write M_N,Rd down by the formula that gave it."""
+    section, d = design.section, plates(design.section)
+    given = {"M_Rd": (full, "moment"), "n": (share, "")}
+    if class_ > 2 or section.shape not in ("I", "hollow rectangle"):
+        w.step("M_N,Rd", "{M_Rd} (1 - {n})", value, "moment", "6.2.1(7)",
+               note="with shear above one half, 6.2.10", **given)  # fmt: skip
+        return
+    if value >= full * (1.0 - 1e-12):
+        w.step("M_N,Rd", "", value, "moment", "6.2.9.1(4), (5)",
+               note="so small a force reduces nothing")  # fmt: skip
+        return
+    wide, thick = d["width"], d.get("flange_thickness", 0.0)
+    if section.shape == "hollow rectangle":
+        wide, thick = section.width, d["wall_thickness"]
+    part = w.step("a", "({A} - 2 {b} {t_f}) / {A} ≤ 0.5",
+                  min((section.area - 2.0 * wide * thick) / section.area, 0.5), "", "6.2.9.1(5)",
+                  A=(section.area, "area"), b=(wide, "section length"),
+                  t_f=(thick, "section length"))  # fmt: skip
+    w.step("M_N,Rd", "{M_Rd} (1 - {n}) / (1 - 0.5 {a}) ≤ M_Rd", value, "moment",
+           "6.2.9.1(5)", note="with shear above one half, 6.2.10", a=(part, ""),
+           **given)  # fmt: skip
 
 
 def _member(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
@@ -134,7 +173,14 @@ def _member(design: MemberDesign, f: Figures, fy: float, class_: int) -> Check:
     w.step("N_Ed", "", force, "force", "", note="compression")
     w.step("M_y,Ed", "", moment, "moment", "")
     w.step("χ_LT", "", chi_lt, "", "6.3.2", note="under the same combination")
-    w.step("k_yy", "", k_yy, "", "annex B, Table B.1", note="C_my = 1")
+    n_y = force / (chi_y[0] * squash)
+    if class_ <= 2:
+        w.step("k_yy", "1 + {λ} {n_y}", k_yy, "", "annex B, Table B.1",
+               note="C_my = 1; λ = λ_y - 0.2, from 0 to 0.8",
+               λ=(min(max(chi_y[1] - 0.2, 0.0), 0.8), ""), n_y=(n_y, ""))  # fmt: skip
+    else:
+        w.step("k_yy", "1 + 0.6 {λ} {n_y}", k_yy, "", "annex B, Table B.1",
+               note="C_my = 1; λ = λ_y ≤ 1", λ=(min(chi_y[1], 1.0), ""), n_y=(n_y, ""))  # fmt: skip
     words = "largest value of Table B.2" if section.shape == "I" else "0.8 k_yy, Table B.1"
     w.step("k_zy", "", 1.0 if section.shape == "I" else 0.8 * k_yy, "", "annex B", note=words)
     k_zy = 1.0 if section.shape == "I" else 0.8 * k_yy
@@ -200,7 +246,18 @@ def _flexural(
     )  # fmt: skip
     curve = flexural_curve(design, axis)
     chi = reduction_factor(slender, IMPERFECTION[curve], plateau=0.2, beta=1.0)
-    return w.step(f"χ_{axis}", "", chi, "", "6.3.1.2, (6.49)", note=f"curve {curve}"), slender
+    alpha = IMPERFECTION[curve]
+    if slender <= 0.2:
+        return w.step(
+            f"χ_{axis}", "", chi, "", "6.3.1.2(4)", note="no reduction up to 0.2"
+        ), slender
+    phi = w.step(
+        f"Φ_{axis}", "0.5 (1 + {α} ({λ} - 0.2) + {λ}²)",
+        0.5 * (1.0 + alpha * (slender - 0.2) + slender**2), "", "6.3.1.2(1)",
+        note=f"curve {curve}", α=(alpha, ""), λ=(slender, ""),
+    )  # fmt: skip
+    return w.step(f"χ_{axis}", "1 / ({Φ} + √({Φ}² - {λ}²)) ≤ 1", chi, "", "6.3.1.2(1), (6.49)",
+                  Φ=(phi, ""), λ=(slender, "")), slender  # fmt: skip
 
 
 def _larger(field: EffectField) -> float:

@@ -105,8 +105,13 @@ def _web_limits(design: MemberDesign, fy: float, w: Working) -> tuple[list[float
     thickness = webs * web_thickness(plates(design.section))
     alpha = min(1.0, 0.5 * (1.0 + force / (web_height(design) * thickness * fy)))
     psi = min(1.0, 2.0 * force / (design.section.area * fy) - 1.0)
-    w.step("α", "", alpha, "", "Table 5.2", note="part of the web compressed, plastic")
-    w.step("ψ", "", psi, "", "Table 5.2", note="ratio of stresses at the web's ends, elastic")
+    given = {"N_Ed": (force, "force"), "f_y": (fy, "stress")}
+    w.step("α", "0.5 (1 + {N_Ed} / ({c_w} {t_w} {f_y})) ≤ 1", alpha, "", "Table 5.2",
+           note="part of the web compressed, plastic", c_w=(web_height(design), "section length"),
+           t_w=(thickness, "section length"), **given)  # fmt: skip
+    w.step("ψ", "2 {N_Ed} / ({A} {f_y}) - 1 ≤ 1", psi, "", "Table 5.2",
+           note="ratio of stresses at the web's ends, elastic", A=(design.section.area, "area"),
+           **given)  # fmt: skip
     third = 42.0 / (0.67 + 0.33 * psi)
     if psi <= -1.0:
         third = 62.0 * (1.0 - psi) * math.sqrt(-psi)
