@@ -139,10 +139,10 @@ def test_rows_show_units_and_are_filtered_by_words_and_kind():
 
 def test_the_difference_to_what_is_there_is_said():
     old, new, _ = candidates()
-    words = compared(old, new, 7850.0, UNITS)
+    words = compared(old, new, (7850.0, 7850.0), UNITS)
     assert words.startswith("Beta [2]: depth 200")
     assert words.endswith("mass 15.7 → 23.6 kg/m, inertia 2000 → 1000 cm⁴")
-    assert "→" not in compared(None, new, 7850.0, UNITS)
+    assert "→" not in compared(None, new, (7850.0, 7850.0), UNITS)
 
 
 def test_kinds_and_names_narrow_together():
@@ -239,7 +239,11 @@ def test_the_shelf_holds_model_job_and_host_once_by_name(opened, tmp_path):
     assert every["IPE 300"].categories == ("I",)  # the kind is known from the host
     assert set(shelf.rows) >= {"W 300"}
     assert "IPE 300" not in shelf.rows
-    assert "Steel S355" in shelf.materials
+    assert shelf.materials["Steel S355"].density == 7850.0
+    made = {c.name for c in shelf.made_of("Steel S355")}
+    assert "W 300" in made
+    assert not made & {"R 400", "R 300x500"}
+    assert shelf.made_of("nothing known") == shelf.every()
     assert keeper.fill(opened, opened.settings, [path], silent).offers["host"] is shelf.offers[
         "host"
     ]  # fmt: skip

@@ -78,7 +78,13 @@ def give():
     found["picked"] = table.candidate().name
     kinds = child(box, QtWidgets.QComboBox, "SpanledgerProfileKind")
     found["kinds"] = [kinds.itemText(i) for i in range(kinds.count())]
+    found["of_steel"] = table.model.rowCount()
+    others = child(box, QtWidgets.QCheckBox, "SpanledgerOtherMaterials")
+    tick = QtCore.QPoint(8, others.height() // 2)
+    click(others, tick)
     found["of_host"] = table.model.rowCount()
+    found["all_kinds"] = [kinds.itemText(i) for i in range(kinds.count())]
+    click(others, tick)
     child(box, QtWidgets.QLineEdit, "SpanledgerProfileFilter").setText("ipe 24 freecad")
     settle(0.3)
     found["filtered"] = [row.texts[0] for row in table.model.rows]

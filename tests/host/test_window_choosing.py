@@ -11,11 +11,14 @@ def test_a_section_of_the_host_is_given_solved_undone_and_written_into_a_copy(in
     assert found["was"] == [["IPE 300", "Steel S355"]]
     assert found["scopes"] == ["line FF-04", "all 4 lines of IPE 300"]
     assert found["picked"] == "IPE 300"  # what it has now
-    assert found["of_host"] > 1000
-    assert {"IPE", "HEA", "Eurocode timber"} <= set(found["kinds"])
+    assert 1000 < found["of_steel"] < found["of_host"]
+    assert {"IPE", "HEA"} <= set(found["kinds"])
+    assert "Eurocode timber" not in found["kinds"]
+    assert "Eurocode timber" in found["all_kinds"]
     assert found["filtered"] == ["IPEA240", "IPE240", "IPEO240", "IPER240"]
     # 2·120·9.8 + 220.4·6.2 mm² of 7850 kg/m³; without fillets, as the host has it.
     assert "mass 42.2 → 29.2 kg/m" in found["compared"]
+    assert "states no fillets" in found["compared"]
     assert "Concrete C30/37" in found["materials"]
     assert found["now"] == [["IPE240", "Steel S355"]]
     assert found["moved"].startswith("✓ IPE240 for line FF-04. FF-04: sagging")

@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING
 
 from analysis_core.checking.offers import JOB, MODEL, Candidate, Offer
 from analysis_core.findings import Finding
+from analysis_core.model import Material
 from analysis_core.settings import Settings, TableSection
 
 from .opened_model import OpenedModel
@@ -30,7 +31,7 @@ class Shelf:
     """Sections by where they come from, and the materials by name."""
 
     offers: Mapping[str, Offer]
-    materials: tuple[str, ...]
+    materials: Mapping[str, Material]
     rows: Mapping[str, TableSection] = field(default_factory=dict)
     """Dimensions of what only the host has: a job file that uses it must state them."""
     findings: tuple[Finding, ...] = ()
@@ -46,6 +47,13 @@ class Shelf:
                     found[known.name] = replace(known, categories=tuple(kinds))
         return list(found.values())
 
+    def made_of(self, material: str) -> list[Candidate]:
+        """Return those of ``every`` that can be made of a material, as names and shapes tell."""
+        from analysis_core.checking.offers import made_of
+
+        known = self.materials.get(material)
+        return self.every() if known is None else made_of(self.every(), known)[0]
+
 
 class ShelfKeeper:
     """Fills the shelf of a model; the host's sections are worked out once for a model."""
@@ -58,6 +66,7 @@ class ShelfKeeper:
     ) -> Shelf:
         """Return what there is to choose from.  Raises IfcReadError, JobError."""
         from analysis_core import pipeline
+        from analysis_core.ifc.updating.stock import stated_material
 
         stock = opened.stocked(settings, progress).stock
         assert stock is not None  # that is what was asked for
@@ -69,10 +78,14 @@ class ShelfKeeper:
             HOST: host,
         }
         known = {c.name for source in (MODEL, JOB) for c in offers[source].candidates}
-        stated = [m.name for m in settings.materials if not set(m.name) & set("*?[")]
+        stated = {
+            m.name: stated_material(m, settings)
+            for m in settings.materials
+            if not set(m.name) & set("*?[")
+        }
         return Shelf(
             offers,
-            tuple(dict.fromkeys([*stock.materials, *stated])),
+            {**stated, **stock.materials},
             {row.name: row for row in tables.section_table if row.name not in known},
             (*tables.section_table_findings, *host.findings),
         )

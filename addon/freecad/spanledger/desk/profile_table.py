@@ -71,7 +71,7 @@ class ProfileTable(QtWidgets.QWidget):
 
     def __init__(self, parent: Any = None) -> None:
         super().__init__(parent)
-        self._candidates: Sequence[Candidate] = ()
+        self._kinds: list[str] | None = None
         self._rows: list[ProfileRow] = []
         self._units: DisplayUnits | None = None
         self.words = entry(
@@ -116,12 +116,16 @@ class ProfileTable(QtWidgets.QWidget):
     ) -> None:
         """Show these sections; ``density`` of the members they are for, kg/m³."""
         self._rows, self._units = profile_rows(candidates, density, units), units
-        if candidates is not self._candidates:
-            self._candidates = candidates
+        kinds = kinds_of(candidates)
+        if kinds != self._kinds:
+            kept, self._kinds = self.kind.currentData(), kinds
+            self.kind.blockSignals(True)
             self.kind.clear()
             self.kind.addItem(translate("Spanledger", "all kinds"), "")
-            for kind in kinds_of(candidates):
+            for kind in kinds:
                 self.kind.addItem(kind, kind)
+            self.kind.setCurrentIndex(max(self.kind.findData(kept), 0))
+            self.kind.blockSignals(False)
         self._filter()
         for column in range(len(COLUMNS)):
             self.tree.resizeColumnToContents(column)

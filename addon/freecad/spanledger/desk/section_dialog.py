@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from typing import Any
 
+from analysis_core.findings import Finding
 from analysis_core.units import DisplayUnits
 
 from ..present.member_decisions import decide_members, drop_members
-from ..present.profiles import compared
+from ..present.profiles import HOST, compared
 from ..present.scopes import Scope
 from ..profile_shelf import Shelf
 from ..qt import QtWidgets, Signal
@@ -38,6 +39,10 @@ class SectionDialog(QtWidgets.QDialog):
             self.scope.addItem(scope.words)
         self.now = _words("SpanledgerSectionNow")
         self.table = ProfileTable()
+        self.others = QtWidgets.QCheckBox(
+            translate("Spanledger", "Sections of other materials too")
+        )
+        self.others.setObjectName("SpanledgerOtherMaterials")
         self.change = _words("SpanledgerSectionChange")
         self.material = _box("SpanledgerMaterial", translate("Spanledger", "Material"))
         self.take = button(
@@ -52,7 +57,8 @@ class SectionDialog(QtWidgets.QDialog):
         close = button("SpanledgerSectionClose", translate("Spanledger", "Close"))
         self._lay_out(close)
         self.scope.currentIndexChanged.connect(lambda _index: self._show_scope())
-        self.material.currentIndexChanged.connect(lambda _index: self._show_change())
+        self.material.currentIndexChanged.connect(lambda _index: self._show_candidates())
+        self.others.toggled.connect(lambda _on: self._show_candidates())
         self.table.picked.connect(lambda _candidate: self._show_change())
         self.take.clicked.connect(self._take)
         self.as_is.clicked.connect(self._take_back)
@@ -78,6 +84,7 @@ class SectionDialog(QtWidgets.QDialog):
         layout = QtWidgets.QVBoxLayout(self)
         layout.addLayout(form)
         layout.addWidget(self.table, 1)
+        layout.addWidget(self.others)
         layout.addWidget(self.change)
         layout.addLayout(buttons)
         self.resize(720, 640)
@@ -93,7 +100,16 @@ class SectionDialog(QtWidgets.QDialog):
         for name in self._shelf.materials:
             self.material.addItem(name, name)
         self.material.blockSignals(False)
-        self.table.show_candidates(self._candidates, scope.density, self._units)
+        self._show_candidates()
+
+    def _show_candidates(self) -> None:
+        """Offer what can be made of the material that the members have or are to get."""
+        scope = self.chosen
+        material = self.material.currentData() or scope.materials[0]
+        shown = self._candidates if self.others.isChecked() else self._shelf.made_of(material)
+        known = self._shelf.materials.get(material)
+        density = known.density if known is not None else scope.density
+        self.table.show_candidates(shown, density, self._units)
         if len(scope.sections) == 1 and self.table.candidate() is None:
             self.table.pick(scope.sections[0])
         self._show_change()
@@ -105,7 +121,11 @@ class SectionDialog(QtWidgets.QDialog):
         if candidate is not None:
             scope = self.chosen
             old = self._by_name.get(scope.sections[0]) if len(scope.sections) == 1 else None
-            words = compared(old, candidate, scope.density, self._units)
+            known = self._shelf.materials.get(material)
+            density = known.density if known is not None else scope.density
+            words = compared(old, candidate, (scope.density, density), self._units)
+            if candidate.origin == HOST:
+                words += "\n" + "\n".join(f.message for f in self._shelf.findings if _matters(f))
         self.change.setText(words)
 
     def _wanted(self) -> tuple[str, str]:
@@ -137,6 +157,11 @@ class SectionDialog(QtWidgets.QDialog):
         title = translate("Spanledger", "{members} as modelled").format(members=scope.words)
         self.accept()
         self.decided.emit(title, lambda text: drop_members(text, scope.elements))
+
+
+def _matters(finding: Finding) -> bool:
+    """Whether a note on the host's list bears on each section in it."""
+    return finding.slug == "profile-without-fillets"
 
 
 def _box(name: str, spoken: str) -> Any:

@@ -52,14 +52,20 @@ def kinds_of(candidates: Iterable[Candidate]) -> list[str]:
     return list(dict.fromkeys(kind for c in candidates for kind in c.categories))
 
 
-def compared(old: Candidate | None, new: Candidate, density: float, units: DisplayUnits) -> str:
-    """Return how a section differs from the one before, in a sentence."""
+def compared(
+    old: Candidate | None, new: Candidate, densities: tuple[float, float], units: DisplayUnits
+) -> str:
+    """Return how a section differs from the one before, in a sentence.
+
+    ``densities``: of the material before and after, kg/m³.
+    """
+    before, after = densities
     parts = [
         f"{say(words)} {_change(a, b, quantity, units)}"
         for words, quantity, a, b in (
             (noop("depth"), "section length", old and old.section.depth, new.section.depth),
-            (noop("mass"), "mass per length", old and old.section.area * density,
-             new.section.area * density),
+            (noop("mass"), "mass per length", old and old.section.area * before,
+             new.section.area * after),
             (noop("inertia"), "inertia", old and old.section.inertia, new.section.inertia),
         )
         if b or a

@@ -688,6 +688,10 @@
       <translation>Querschnitte und Baustoffe bleiben, wie das Modell sie hat:</translation>
     </message>
     <message>
+      <source>Sections of other materials too</source>
+      <translation>Auch Querschnitte aus anderen Baustoffen</translation>
+    </message>
+    <message>
       <source>Sections that change: {count}; {mass} kg less in all.</source>
       <translation>Geänderte Querschnitte: {count}; insgesamt {mass} kg weniger.</translation>
     </message>
