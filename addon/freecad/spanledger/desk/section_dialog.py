@@ -87,7 +87,7 @@ class SectionDialog(QtWidgets.QDialog):
         layout.addWidget(self.others)
         layout.addWidget(self.change)
         layout.addLayout(buttons)
-        self.resize(720, 640)
+        self.resize(820, 660)
 
     def _show_scope(self) -> None:
         scope = self.chosen
