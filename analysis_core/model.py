@@ -222,6 +222,18 @@ class Member:
             for piece in self.pieces
         )
 
+    @property
+    def shear_parameter(self) -> float | None:
+        """Φ = 12 EI/(G A_s L²) of a member that bends and shears alike all along, else None."""
+        first = self.pieces[0]
+        alike = all(
+            (piece.shear, piece.flexural, piece.power) == (first.shear, first.flexural, first.power)
+            for piece in self.pieces
+        )
+        if first.shear is None or not alike or any((*first.shear[1:], *first.flexural[1:])):
+            return None
+        return 12.0 * first.flexural_at(0.0) / (first.shear[0] * self.length**2)
+
 
 @dataclass(frozen=True, slots=True)
 class DistributedForce:

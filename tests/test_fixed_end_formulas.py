@@ -6,7 +6,9 @@ import numpy as np
 import pytest
 
 from analysis_core.calculation.fixed_end_rows import fixed_end_rows
-from analysis_core.model import DistributedForce, Joint, Line, Member, Piece
+from analysis_core.distribution.record import distribute
+from analysis_core.model import RIGID, DistributedForce, Joint, Line, Member, Piece, Support
+from analysis_core.report.record_rows import record_tables
 from analysis_core.units import display_units
 
 METRIC = display_units("metric", {})
@@ -67,3 +69,28 @@ def test_shear_lowers_what_both_ends_turn_alike_and_nothing_else():
     turned, alike = (start - end) / 2, (start + end) / (2 * (1 + phi))
     assert (start_, end_) == pytest.approx((turned + alike, -turned + alike), abs=0.02)
     assert "Φ" not in row(DistributedForce("G", 0, 0.0, LENGTH, (7.3e3,)), shear=(3e7,))[0]
+
+
+def test_stiffness_with_shear_follows_from_the_note_of_the_table():
+    """The table's stiffness and carry-over redone from Φ as printed, for a fixed far end."""
+    fixed = Support(RIGID, RIGID, RIGID)
+    joints = tuple(
+        Joint(i, x, 0.0, (x, 0.0, 0.0), fixed if i != 1 else Support(RIGID))
+        for i, x in enumerate((0.0, LENGTH, LENGTH + 4.0))
+    )
+    members = (
+        Member(0, 0, 1, (Piece(LENGTH, (1e7,), shear=(3e7,)),), span=1),
+        Member(1, 1, 2, (Piece(4.0, (1e7,), shear=(3e7,)),), span=2),
+    )
+    load = DistributedForce("G", 0, 0.0, LENGTH, (7.3e3,))
+    (table,) = record_tables(distribute(Line("L", joints, members, (load,)), "G"), METRIC)
+    rows = {row.kind: row.cells for row in table.rows}
+    note = next(n for n in table.notes if n.startswith("Flexible in shear"))
+    values = [float(v) for v in re.findall(r"(\d\.\d{4}) for", note)]
+
+    assert len(values) == 2
+    at = table.columns.index("1-0")
+    phi = values[0]
+    stiffness = (4 + phi) / (1 + phi) * 1e7 / LENGTH / 1e3
+    assert float(rows["stiffness"][at]) == pytest.approx(stiffness, rel=1e-3)
+    assert float(rows["carry"][at]) == pytest.approx((2 - phi) / (4 + phi), abs=2e-4)

@@ -73,7 +73,7 @@ def _formula(member: Member, action: MemberAction, units: DisplayUnits) -> str:
     length = member.length
     span = units.number(length, "length")
     if not member.prismatic:
-        shear = shear_parameter(member)
+        shear = member.shear_parameter
         if shear is None:
             return "by integration along the member, whose rigidity varies"
         rigid = _formula(replace(member, pieces=(_rigid(member),)), action, units)
@@ -116,21 +116,6 @@ def _part_formula(action: DistributedForce, length: float, units: DisplayUnits) 
             f"{span}²/60"
         )
     return f"∓ ∫ w s (L-s)²/L² ds and ± ∫ w s² (L-s)/L² ds from {a} to {b}, L = {span}"
-
-
-def shear_parameter(member: Member) -> float | None:
-    """Return Φ = 12 EI/(G A_s L²) of a member that bends and shears alike all along, else None."""
-    first = member.pieces[0]
-    alike = all(
-        piece.shear is not None
-        and first.shear is not None
-        and len(piece.shear) == len(piece.flexural) == 1
-        and (piece.shear, piece.flexural, piece.power) == (first.shear, first.flexural, first.power)
-        for piece in member.pieces
-    )
-    if not alike or first.shear is None:
-        return None
-    return 12.0 * first.flexural_at(0.0) / (first.shear[0] * member.length**2)
 
 
 def _rigid(member: Member) -> Piece:

@@ -68,12 +68,23 @@ def _interaction(
     slender = _slenderness(design, w)
     elastic = math.pi**2 * e / slender**2
     w.step("F_e", "π² {E} / {s}²", elastic, "stress", "(E3-4)", E=(e, "stress"), s=(slender, ""))
-    stress = w.step("F_cr", "", critical_stress(elastic, fy), "stress", "(E3-2), (E3-3)")
+    given = {"F_e": (elastic, "stress")}
+    if fy / elastic <= 2.25:
+        stress = w.step("F_cr", "0.658^({F_y}/{F_e}) {F_y}", critical_stress(elastic, fy), "stress",
+                        "(E3-2)", note="", F_y=(fy, "stress"), **given)  # fmt: skip
+    else:
+        stress = w.step("F_cr", "0.877 {F_e}", critical_stress(elastic, fy), "stress", "(E3-3)",
+                        note="", **given)  # fmt: skip
     factors = (
         (1.0 / f["Omega_c"], 1.0 / f["Omega_t"]) if allowable else (f["phi_c"], f["phi_t"])
     )  # fmt: skip
-    compression = w.step("P_c", "", factors[0] * stress * area, "force", "E1, (E3-1)")
-    tension = w.step("T_c", "", factors[1] * fy * area, "force", "D2(a)", note="yielding")
+    sign = "1/Ω" if allowable else "φ"
+    compression = w.step("P_c", "{k} {F_cr} {A_g}", factors[0] * stress * area, "force",
+                         "E1, (E3-1)", note=f"k = {sign}", k=(factors[0], ""),
+                         F_cr=(stress, "stress"), A_g=(area, "area"))  # fmt: skip
+    tension = w.step("T_c", "{k} {F_y} {A_g}", factors[1] * fy * area, "force", "D2(a)",
+                     note=f"yielding, k = {sign}", k=(factors[1], ""), F_y=(fy, "stress"),
+                     A_g=(area, "area"))  # fmt: skip
     worst: tuple[float, EffectField, float, float, float] | None = None
     for field in design.fields:
         moment, strength = under(field)
@@ -107,10 +118,14 @@ def _slenderness(design: MemberDesign, w: Working) -> float:
     section = design.section
     radii = [math.sqrt(i / section.area) for i in (section.inertia, section.inertia_lateral)]
     lengths = [length_in_plane(design), lateral_length(design)]
-    x, y = (length / radius for length, radius in zip(lengths, radii, strict=True))
-    w.step("L_x / r_x", "", x, "", "E2", note="K = 1; 2 where an end is free")
-    w.step("L_y / r_y", "", y, "", "E2", note="K = 1, where both flanges are held")
-    return max(x, y)
+    notes = ("K = 1; 2 where an end is free", "K = 1, where both flanges are held")
+    found = []
+    for axis, length, radius, note in zip("xy", lengths, radii, notes, strict=True):
+        found.append(w.step(
+            f"L_{axis}/r_{axis}", f"{{L_{axis}}} / {{r_{axis}}}", length / radius, "", "E2",
+            note=note, **{f"L_{axis}": (length, "length"), f"r_{axis}": (radius, "section length")},
+        ))  # fmt: skip
+    return max(found)
 
 
 def _slender_walls(design: MemberDesign, e: float, fy: float) -> str:

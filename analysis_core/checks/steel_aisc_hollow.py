@@ -59,7 +59,15 @@ def _tube(design: MemberDesign, fy: float, e: float, w: Working) -> float | None
     ratio = w.step("D/t", "", design.section.depth / d["wall_thickness"], "", "Table B4.1b",
                    note=f"compact up to {0.07 * e / fy:.1f}")  # fmt: skip
     nominal = tube_strength(ratio, z=plastic, s=elastic, e=e, fy=fy)
-    return None if nominal is None else w.step("M_n", "", nominal, "moment", "(F8-1), (F8-2)")
+    if nominal is None:
+        return None
+    given = {"F_y": (fy, "stress")}
+    if ratio <= 0.07 * e / fy:
+        return w.step("M_n", "{F_y} {Z}", nominal, "moment", "(F8-1)", note="",
+                      Z=(plastic, "section modulus"), **given)  # fmt: skip
+    return w.step("M_n", "(0.021 {E} / {D/t} + {F_y}) {S} ≤ F_y Z", nominal, "moment", "(F8-2)",
+                  note="", E=(e, "stress"), S=(elastic, "section modulus"),
+                  **{"D/t": (ratio, "")}, **given)  # fmt: skip
 
 
 def _box(design: MemberDesign, f: Figures, fy: float, w: Working) -> float | None:
@@ -75,9 +83,26 @@ def _box(design: MemberDesign, f: Figures, fy: float, w: Working) -> float | Non
     nominal = box_strength(flange, web, z=plastic, s=elastic, e=e, fy=fy)
     if nominal is None:
         return None
-    if nominal < fy * plastic:
-        w.step("M_n", "", nominal, "moment", "(F7-2), (F7-6)", note="walls not compact")
+    _wall_steps(w, flange, web, plastic, elastic, e, fy)
     return min(nominal, _box_lateral(design, f, fy, w, elastic))
+
+
+def _wall_steps(
+    w: Working, flange: float, web: float, z: float, s: float, e: float, fy: float
+) -> None:
+    """Write down what walls that are not compact leave."""
+    mp, root = fy * z, math.sqrt(e / fy)
+    given = {"M_p": (mp, "moment"), "F_y": (fy, "stress"), "S": (s, "section modulus"),
+             "E": (e, "stress")}  # fmt: skip
+    limit = math.sqrt(fy / e)
+    if flange > 1.12 * root:
+        w.step("M_n,f", "{M_p} - ({M_p} - {F_y} {S}) (3.57 {b/t} √({F_y}/{E}) - 4.0) ≤ M_p",
+               min(mp, mp - (mp - fy * s) * (3.57 * flange * limit - 4.0)), "moment", "(F7-2)",
+               note="flange not compact", **{"b/t": (flange, "")}, **given)  # fmt: skip
+    if web > 2.42 * root:
+        w.step("M_n,w", "{M_p} - ({M_p} - {F_y} {S}) (0.305 {h/t} √({F_y}/{E}) - 0.738) ≤ M_p",
+               min(mp, mp - (mp - fy * s) * (0.305 * web * limit - 0.738)), "moment", "(F7-6)",
+               note="web not compact", **{"h/t": (web, "")}, **given)  # fmt: skip
 
 
 def _elastic(d: Mapping[str, float]) -> float:
@@ -92,14 +117,23 @@ def _box_lateral(design: MemberDesign, f: Figures, fy: float, w: Working, elasti
         return mp
     ry = math.sqrt(section.inertia_lateral / section.area)
     root = math.sqrt(section.torsion * section.area)
-    lp = w.step("L_p", "0.13 E r_y √(J A) / M_p", 0.13 * e * ry * root / mp, "length", "(F7-12)")
-    lr = w.step("L_r", "2 E r_y √(J A) / (0.7 F_y S_x)", 2.0 * e * ry * root / (0.7 * fy * elastic),
-                "length", "(F7-13)")  # fmt: skip
+    given = {"E": (e, "stress"), "r_y": (ry, "section length"), "J": (section.torsion, "inertia"),
+             "A": (section.area, "area")}  # fmt: skip
+    lp = w.step("L_p", "0.13 {E} {r_y} √({J} {A}) / {M_p}", 0.13 * e * ry * root / mp, "length",
+                "(F7-12)", note="", M_p=(mp, "moment"), **given)  # fmt: skip
+    lr = w.step("L_r", "2 {E} {r_y} √({J} {A}) / (0.7 {F_y} {S_x})",
+                2.0 * e * ry * root / (0.7 * fy * elastic), "length", "(F7-13)", note="",
+                F_y=(fy, "stress"), S_x=(elastic, "section modulus"), **given)  # fmt: skip
     w.step("L_b", "", lb, "length", "", note="where both flanges are held")
     if lb <= lp:
         return mp
     if lb <= lr:
-        nominal = mp - (mp - 0.7 * fy * elastic) * (lb - lp) / (lr - lp)
-    else:
-        nominal = 2.0 * e * ry * root / lb
-    return w.step("M_n", "", min(nominal, mp), "moment", "(F7-10), (F7-11)", note="C_b = 1")
+        return w.step(
+            "M_n", "{M_p} - ({M_p} - 0.7 {F_y} {S_x}) ({L_b} - {L_p}) / ({L_r} - {L_p})",
+            mp - (mp - 0.7 * fy * elastic) * (lb - lp) / (lr - lp), "moment", "(F7-10)",
+            note="C_b = 1", M_p=(mp, "moment"), F_y=(fy, "stress"),
+            S_x=(elastic, "section modulus"), L_b=(lb, "length"), L_p=(lp, "length"),
+            L_r=(lr, "length"),
+        )  # fmt: skip
+    return w.step("M_n", "2 {E} {r_y} √({J} {A}) / {L_b}", 2.0 * e * ry * root / lb, "moment",
+                  "(F7-11)", note="C_b = 1", L_b=(lb, "length"), **given)  # fmt: skip

@@ -145,6 +145,7 @@ def _notes(
     if table.parity:
         notes.append(f"The moments are {table.parity}; the left half is written down.")
     if number == 0:
+        notes += _shear_note(record.line)
         notes += [
             f"Overhang {member}: {units.text(start, 'moment')} at its start, "
             f"{units.text(end, 'moment')} at its end, from statics."
@@ -153,3 +154,18 @@ def _notes(
     elif len(record.tables) > 1:
         notes.append(f"By equilibrium of forces this table counts {table.size:.6g} times.")
     return tuple(notes)
+
+
+def _shear_note(line: Line) -> list[str]:
+    """How stiffness follows for members flexible in shear, so that a checker can redo it."""
+    found = [
+        f"{shear:.4f} for {member.start}-{member.end}"
+        for member in line.members
+        if (shear := member.shear_parameter) is not None
+    ]
+    if not found:
+        return []
+    return [
+        f"Flexible in shear: stiffness (4 + Φ)/(1 + Φ) EI/L and carry-over (2 - Φ)/(4 + Φ) with "
+        f"Φ = 12 EI/(G A_s L²): {', '.join(found)}."
+    ]

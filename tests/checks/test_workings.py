@@ -103,6 +103,14 @@ CASES = {
     "W tension": lambda: steel_aisc.check_steel(
         pressed(simple_span(W18X50, A992, 4.0, 20e3), 900e3), AISC),
     "HSS": lambda: steel_aisc.check_steel(pressed(simple_span(RHS, A992, 4.0, 20e3), -9e5), AISC),
+    "HSS with thin walls": lambda: steel_aisc.check_steel(
+        simple_span(box("thin", 0.40, 0.2, 0.0065), A992, 9.0, 2e3), AISC),
+    "HSS long": lambda: steel_aisc.check_steel(
+        simple_span(box("deep", 0.5, 0.1, 0.012), A992, 60.0, 2e2), AISC),
+    "pipe": lambda: steel_aisc.check_steel(
+        simple_span(tube("P", 0.3, 0.006), A992, 4.0, 1e3), AISC),
+    "slender column": lambda: steel_aisc.check_steel(
+        pressed(simple_span(RHS, A992, 14.0, 2e2), -9e4), AISC),
     "concrete": lambda: concrete_en.check_concrete(
         hogging(rectangle(0.3, 0.5), C30, 8.0, 40e3), CEN),
     "T": lambda: concrete_en.check_concrete(hogging(tee(1.0, 0.12, 0.3, 0.6), C30, 8.0, 60e3), CEN),
