@@ -22,7 +22,8 @@ from analysis_core.model import (
     Section,
     Support,
 )
-from analysis_core.revision.fingerprints import basis, differences, fingerprint
+from analysis_core.revision.fingerprints import basis, fingerprint
+from analysis_core.revision.reasons import FOR_ALL, differences, places
 from analysis_core.settings import Analysis, Settings
 
 SECTION = Section("R 300x500", "rectangle", 0.15, 3.125e-3, depth=0.5, width=0.3)
@@ -99,10 +100,11 @@ def test_a_longer_span_is_no_change_of_section(line):
     ("change", "sentence"),
     [
         ({"received": {"L1-02": "other"}}, "L1-02, whose reactions it receives, changed"),
-        ({"received": {}}, "reactions of L1-02 changed"),
+        ({"received": {}}, "L1-02 bears on it no more"),
+        ({"received": {"L1-02": "abc; elsewhere"}}, "L1-02 bears on it elsewhere"),
         ({"rules": "ASCE 7-22"}, "rules changed from EN 1990 to ASCE 7-22"),
-        ({"settings": Settings(analysis=Analysis(shear_flexible=True))}, "settings changed"),
-        ({"combinations": ()}, "combinations changed"),
+        ({"settings": Settings(analysis=Analysis(shear_flexible=True))}, FOR_ALL[1]),
+        ({"combinations": ()}, FOR_ALL[0]),
     ],
 )
 def test_what_changes_the_results_is_named(line, change, sentence):
@@ -119,7 +121,8 @@ def test_a_new_action_and_another_support_are_named(line):
     actions, support = differences(of(line), of(after), {})
 
     assert actions == "actions of G changed, 1 before and 2 now"
-    assert support == "support at joint 0 changed from rigid/free/free to rigid/free/rigid"
+    was, now = (f"vertical rigid, horizontal free, rotation {r}" for r in ("free", "rigid"))
+    assert support == f"support at joint 0 changed from {was} to {now}"
 
 
 @pytest.mark.parametrize(
@@ -143,8 +146,89 @@ def test_a_new_action_and_another_support_are_named(line):
     ],
 )
 def test_actions_are_hashed_in_the_form_that_posted_files_hold(line, action, row):
-    # Files keep fingerprints: the same content must give the same hash in every later version.
+    # Files keep fingerprints: the same content must give the same hash in every later version, or
+    # the form counts up.
     text = of(replace(line, actions=(action,)))["actions G"]
 
     digest = hashlib.sha256(json.dumps([json.dumps(row)]).encode()).hexdigest()[:10]
     assert text == f"1 #{digest}"
+
+
+def test_another_modulus_is_told_of_the_material_and_not_of_the_section(line):
+    softer = replace(CONCRETE, elastic_modulus=0.5 * CONCRETE.elastic_modulus)
+    pieces = [(Piece(m.length, (0.5 * 1.03e8,)),) for m in line.members]
+    members = tuple(
+        replace(m, material=softer, pieces=p) for m, p in zip(line.members, pieces, strict=True)
+    )
+
+    told = differences(of(line), of(replace(line, members=members)), {})
+
+    assert told == [
+        f"material of B-{i} changed from C30/37 (E 33 GPa, 2500 kg/m³) to C30/37 (E 16.5 GPa, "
+        f"2500 kg/m³)"
+        for i in (0, 1)
+    ]
+
+
+def test_a_release_is_told_of_the_connection(line):
+    released = replace(line.members[1], end_spring=0.0)
+    after = of(replace(line, members=(line.members[0], released)))
+
+    assert differences(of(line), after, {"B-1": "B2-BC"}) == [
+        "connection of B2-BC changed from rigid to end free"
+    ]
+    moved = replace(line.members[0], end_spring=0.0)
+    other = of(replace(line, members=(moved, line.members[1])))
+    assert fingerprint(other) != fingerprint(after)
+
+
+def test_a_member_more_is_told_once(line):
+    lost = {key: text for key, text in of(line).items() if not key.endswith(" B-1")}
+
+    assert differences(lost, of(line), {}) == ["B-1 is part of it now"]
+    assert differences(of(line), lost, {"B-1": "X"}) == ["X is part of it no more"]
+
+
+def test_a_case_with_another_name_is_told_as_such(line):
+    after = replace(line, actions=tuple(
+        replace(a, case="Offices") if a.case == "Q" else a for a in line.actions
+    ))  # fmt: skip
+    assert differences(of(line), of(after), {}) == ["case Q is called Offices now"]
+
+
+def test_a_support_is_told_by_its_place(line):
+    joints = (replace(line.joints[0], support=Support(4e8)), *line.joints[1:])
+    after = replace(line, joints=joints)
+
+    (told,) = differences(of(line), of(after), {}, places(after, {"W-1": "Wall 1"}))
+    assert told.startswith("support at 0.000 m (Wall 1) changed from vertical rigid")
+    assert told.endswith("to vertical 4e+08 N/m, horizontal free, rotation free")
+
+
+def test_what_an_older_form_recorded_is_told_as_such(line):
+    older = {key: text for key, text in of(line).items() if key != "form"}
+
+    (told,) = differences(older, of(line), {})
+    assert "earlier version" in told
+
+
+@pytest.mark.parametrize("sixteenths", range(1, 400, 14))
+def test_rounding_does_not_hang_on_the_last_bit(line, sixteenths):
+    """Half a sixteenth of an inch is half a micrometre: the usual way of rounding is chance."""
+    exact = 1.5875e-3 * sixteenths
+    prints = set()
+    for x in (exact, 0.0254 / 16 * sixteenths, exact * (1 - 3e-16), exact * (1 + 3e-16)):
+        action = PointForce("G", 0, 0.5 * x, 1e3 * x, 1e-13 * x)
+        prints.add(fingerprint(of(_stretched(line, x, action))))
+
+    assert len(prints) == 1
+
+
+def _stretched(line, x, action):
+    lengths = (x, line.joints[2].x - x)
+    members = tuple(
+        replace(m, pieces=(Piece(length, (1.03e8,)),))
+        for m, length in zip(line.members, lengths, strict=True)
+    )
+    joints = (line.joints[0], replace(line.joints[1], x=x), line.joints[2])
+    return replace(line, members=members, joints=joints, actions=(action,))

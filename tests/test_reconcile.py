@@ -109,7 +109,7 @@ def heavier(model):
 CHANGES = {
     # change: what is found, by the names of the elements of the lines concerned
     deeper: {"B1": "section", "B2": "section", "B3": "section"},
-    stiffer: {"J-": "section", "R-": "section"},
+    stiffer: {"J-": "^changed: material of J-. changed", "R-": "E 210 GPa.*E 200 GPa"},
     moved_sideways: {"R-D": "moved by 0.100 m"},
     new_global_ids: {},
     one_gone: {"R-A": "gone"},
@@ -122,7 +122,11 @@ CHANGES = {
         "B2": "not analysed now",
     },
     column_gone: {"R-B": "geometry"},
-    joist_moved: {"J-1": "moved by 0.400 m", "B1": "FF-", "B2": "FF-"},
+    joist_moved: {
+        "J-1": "moved by 0.400 m",
+        "B1": "FF-04 bears on it elsewhere",
+        "B2": "FF-04 bears on it elsewhere",
+    },
     heavier: {"B1": "actions of Self weight", "B2": "actions", "B3": "actions"},
 }
 

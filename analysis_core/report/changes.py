@@ -7,6 +7,7 @@ from typing import Any
 
 from analysis_core.report.csv_text import csv_text
 from analysis_core.report.tables import CAUTION, findings_text, safe, table
+from analysis_core.revision.motion import STILL
 from analysis_core.revision.reconcile import Governing, LineChange, Reconciliation
 from analysis_core.units import DisplayUnits
 
@@ -31,6 +32,10 @@ def changes_text(found: Reconciliation, units: DisplayUnits) -> str:
     parts = [head]
     if found.renamed:
         parts.append(f"{len(found.renamed)} elements have new GlobalIds and were matched by place.")
+    if found.motion != STILL:
+        parts.append(f"{found.motion.sentence()} Places are compared after that.")
+    for old, new in found.storeys.items():
+        parts.append(f"Storey '{safe(old)}' is called '{safe(new)}' now.")
     if changed:
         parts.append(_effects_table(changed, units))
         parts.append("\n".join(_reasons(change) for change in changed))
@@ -46,6 +51,8 @@ def changes_document(found: Reconciliation) -> dict[str, Any]:
         "before": _model(found.before),
         "after": _model(found.after),
         "renamed": dict(found.renamed),
+        "motion": {"turn": found.motion.turn, "shift": list(found.motion.shift)},
+        "storeys": dict(found.storeys),
         "solved_again": list(found.solved_again),
         "changes": [_change(change) for change in found.changes],
     }

@@ -4,8 +4,9 @@ The *basis* of a line is a mapping of subjects to short texts: geometry, each el
 and material, each support, the actions of each case, rules and settings, and the fingerprints of
 the lines whose reactions it receives.  The fingerprint is the hash of the basis.  The basis is
 stored with the results, so that a later run can say not only that a result is stale but why.
-Lengths are rounded to a micrometre and other values to nine digits: a re-saved file does not
-make a result stale.  The place of a line in the building is not part of it.
+Lengths are rounded to a micrometre and other values to nine digits, so that the last digits of a
+number, which change with the unit of a file, do not make a result stale.  The place of a line in
+the building is not part of it.
 """
 
 from __future__ import annotations
@@ -13,7 +14,6 @@ from __future__ import annotations
 import hashlib
 import json
 import math
-import re
 from collections.abc import Callable, Hashable, Mapping, Sequence
 from dataclasses import fields
 from functools import cache
@@ -38,8 +38,13 @@ _VALUES: Mapping[type[Action], Callable[[Action], tuple[Any, ...]]] = {
     for kind in get_args(MemberAction | JointAction)
 }
 
-RECEIVES = "whose reactions it receives"
-_DIGEST = re.compile(r" ?#[0-9a-f]{10}\b")
+FORM = "2"
+"""Counts up when the texts of a basis are written differently: older results are then stale."""
+_BESIDE = 3.7e-11
+"""Halves of a last digit are common (half a sixteenth of an inch is half a micrometre), and which
+way they are rounded is chance.  Shifted by this part of itself, no common number is one."""
+_NOTHING = 1e-9
+"""N, N/m, N·m, m or 1/m: what is left of a zero after turning and scaling."""
 
 
 def fingerprint(basis: Mapping[str, str]) -> str:
@@ -47,7 +52,7 @@ def fingerprint(basis: Mapping[str, str]) -> str:
 
     Names of elements and marks of lines are left out: new GlobalIds or marks change no result.
     """
-    nameless = ("section", "material", "received")
+    nameless = ("section", "material", "ends", "received")
     rows = [
         [key.partition(" ")[0] if key.startswith(nameless) else key, text]
         for key, text in basis.items()
@@ -97,6 +102,8 @@ class Bases:
             key = member.element or str(member.id)
             _join(texts, f"section {key}", self._section(member))
             _join(texts, f"material {key}", self._material(member.material))
+            ends = texts.get(f"ends {key}")
+            texts[f"ends {key}"] = f"{ends}; {_ends(member)}" if ends else _ends(member)
         for joint in line.joints:
             if joint.support is not None:
                 texts[f"support {joint.id}"] = _support(joint.support)
@@ -106,6 +113,7 @@ class Bases:
         for case in sorted(by_case):
             texts[f"actions {case}"] = self._actions_of(by_case[case])
         texts |= self._common
+        texts["form"] = FORM
         for mark, print_ in received.items():
             texts[f"received {mark}"] = print_
         return texts
@@ -118,7 +126,7 @@ class Bases:
         return text
 
     def _section(self, member: Member) -> str:
-        key = member.pieces, member.section
+        key = member.pieces, member.section, member.material
         text = self._sections.get(key)
         if text is None:
             text = self._sections[key] = _section(member)
@@ -131,77 +139,43 @@ class Bases:
         return text
 
 
-def differences(
-    before: Mapping[str, str], after: Mapping[str, str], names: Mapping[str, str]
-) -> list[str]:
-    """Return sentences that say what changed between two bases of a line.
-
-    ``names``: name by GlobalId, for sentences that an engineer understands.
-    """
-    sentences = []
-    for key in sorted({*before, *after}):
-        old, new = before.get(key), after.get(key)
-        if old == new:
-            continue
-        subject, _, which = key.partition(" ")
-        what = _subject(subject, which, names)
-        if subject == "received" and old and new:
-            sentences.append(f"{which}, {RECEIVES}, changed")
-        elif subject in ("geometry", "section", "material", "support", "actions", "rules"):
-            sentences.append(_change(subject, what, old, new))
-        else:
-            sentences.append(f"{what} changed")
-    return sentences
-
-
-def _subject(subject: str, which: str, names: Mapping[str, str]) -> str:
-    if not which:
-        return subject
-    if subject == "support":
-        return f"support at joint {which}"
-    if subject == "received":
-        return f"reactions of {which}"
-    return f"{subject} of {names.get(which) or which}"
-
-
-def _change(subject: str, what: str, old: str | None, new: str | None) -> str:
-    was, now = _shown(old or ""), _shown(new or "")
-    if subject == "actions":
-        if old is None:
-            return f"{what} are new ({now} of them)"
-        if new is None:
-            return f"{what} are gone ({was} before)"
-        return f"{what} changed" if was == now else f"{what} changed, {was} before and {now} now"
-    if old is None:
-        return f"{what} is new ({now})"
-    if new is None:
-        return f"{what} is gone (was {was})"
-    return f"{what} changed" if was == now else f"{what} changed from {was} to {now}"
-
-
-def _shown(text: str) -> str:
-    """A text without the digests, which say nothing to an engineer."""
-    return _DIGEST.sub("", text)
-
-
 def _geometry(line: Line) -> str:
     spans = " + ".join(_short(m.length) for m in line.members)
     detail = [
         line.kind,
         [[_micrometres(j.x), _micrometres(j.z)] for j in line.joints],
-        [
-            [m.start, m.end, m.role, _nine(m.start_spring), _nine(m.end_spring)]
-            for m in line.members
-        ],
+        [[m.start, m.end, m.role] for m in line.members],
     ]
     return f"{spans} m #{_digest(detail)}"
 
 
+def _ends(member: Member) -> str:
+    """How the member is connected to the joints at its start and end."""
+    return "/".join(_degree(spring) for spring in (member.start_spring, member.end_spring))
+
+
+def _degree(stiffness: float) -> str:
+    if math.isinf(stiffness):
+        return "rigid"
+    return f"{stiffness:.9g}" if stiffness else "free"
+
+
 def _section(member: Member) -> str:
-    section = member.section
-    whole = member.length  # shares of it: how long a member is belongs to the geometry
-    pieces = [[_nine(p.length / whole), [_nine(c) for c in p.flexural], _nine(p.power),
-               [_nine(c) for c in p.shear or ()]] for p in member.pieces]  # fmt: skip
+    """What the section adds to the rigidities: neither the material nor the length."""
+    section, material = member.section, member.material
+    bending = shearing = 1.0
+    if section is not None and material is not None:
+        bending = material.elastic_modulus or 1.0
+        shearing = material.shear_modulus or bending
+    pieces = [
+        [
+            _nine(p.length / member.length),
+            [_nine(c / bending ** (1.0 / p.power)) for c in p.flexural],
+            _nine(p.power),
+            [_nine(c / shearing) for c in p.shear or ()],
+        ]
+        for p in member.pieces
+    ]
     if section is None:
         return f"EI {member.flexural_rigidity:.4g} N·m² #{_digest(pieces)}"
     size = f"{1e3 * section.depth:.0f} mm deep" if section.depth else ""
@@ -213,12 +187,15 @@ def _material(material: Material | None) -> str:
         return "not stated"
     m = material
     strength = sorted((k, _nine(v)) for k, v in m.strength)
-    return f"{m.name} #{_digest([_nine(m.elastic_modulus), _nine(m.density), strength])}"
+    values = [_nine(v) for v in (m.elastic_modulus, m.shear_modulus, m.density)]
+    modulus = f"E {m.elastic_modulus / 1e9:.5g} GPa"
+    density = f", {m.density:.5g} kg/m³" if m.density else ""
+    return f"{m.name or 'not named'} ({modulus}{density}) #{_digest([*values, strength])}"
 
 
 def _support(support: Support) -> str:
     values = (support.vertical, support.horizontal, support.rotation)
-    return "/".join("rigid" if math.isinf(v) else f"{v:.9g}" if v else "free" for v in values)
+    return "/".join(map(_degree, values))
 
 
 def _actions(actions: Sequence[Action]) -> str:
@@ -239,8 +216,8 @@ def _action(action: Action) -> str:
         else:
             numbers.append(value)
     form = _form(kind.__name__, len(numbers) - sum(lengths), tuple(lengths))
-    # Adding nothing leaves no minus before a zero.
-    return form % tuple([number + 0.0 for number in numbers])
+    shift, nothing = 1.0 + _BESIDE, _NOTHING
+    return form % tuple([n * shift if n > nothing or n < -nothing else 0.0 for n in numbers])
 
 
 @cache
@@ -263,11 +240,11 @@ def _join(texts: dict[str, str], key: str, text: str) -> None:
 
 
 def _micrometres(value: float) -> int:
-    return round(value * 1e6)
+    return round(value * 1e6 + 0.0123)
 
 
 def _nine(value: float) -> str:
-    return f"{value:.9g}" if value else "0"
+    return f"{value * (1.0 + _BESIDE):.9g}" if value else "0"
 
 
 def _short(value: float) -> str:

@@ -12,7 +12,8 @@ from typing import Literal
 
 from analysis_core.ifc.posting.posted import Posted
 from analysis_core.model import Line, LineModel
-from analysis_core.revision.fingerprints import differences, fingerprint
+from analysis_core.revision.fingerprints import fingerprint
+from analysis_core.revision.reasons import differences, places
 
 State = Literal["current", "stale", "not posted"]
 Entries = Mapping[str, Sequence[Posted]]
@@ -51,7 +52,8 @@ def _state(
     reasons: dict[str, None] = {}
     for entry in found.values():
         if _print(entry) != own:
-            told = differences(entry.basis, basis, names) if entry.basis else []
+            joints = places(line, names)
+            told = differences(entry.basis, basis, names, joints) if entry.basis else []
             reasons.update(dict.fromkeys(told or [_NO_BASIS]))
     reasons.update(
         {f"{names.get(e) or e} has no results": None for e in elements if e not in found}

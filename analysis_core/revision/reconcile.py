@@ -11,17 +11,22 @@ import difflib
 import math
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
+
+import numpy as np
 
 from analysis_core.errors import JobError
+from analysis_core.findings import listed
 from analysis_core.model import Line, Point
 from analysis_core.results import LineResult, Outcome
-from analysis_core.revision.fingerprints import RECEIVES, differences
+from analysis_core.revision.motion import STILL, Motion, common_motion
+from analysis_core.revision.reasons import FOR_ALL, RECEIVES, differences, places
 
 SAME_PLACE = 0.05
 """Ends of an element closer than this (m) are at the same place."""
 SAME_EFFECT = 1e-9
-"""Effects that differ by less than this part of themselves are the same."""
+"""Effects that differ by less than this part of the largest of their kind are the same."""
+_KINDS = (("sagging", "hogging"), ("shear", "reaction_max", "reaction_min"), ("deflection",))
 MOVED = 1e-4
 """A line whose joints moved by more than this (m) has moved."""
 
@@ -59,10 +64,8 @@ class LineChange:
         """The largest relative change of an effect; infinite for a line that is new or gone."""
         if self.effects_before is None or self.effects_after is None:
             return math.inf
-        return max(
-            _relative(getattr(self.effects_before, name), getattr(self.effects_after, name))
-            for name in Governing.__dataclass_fields__
-        )
+        before, after = self.effects_before, self.effects_after
+        return max(_relative(before, after, kind) for kind in _KINDS)
 
 
 @dataclass(frozen=True, slots=True)
@@ -76,16 +79,23 @@ class Reconciliation:
     """GlobalId before to GlobalId after, of elements that were matched by place and shape."""
     solved_again: tuple[str, ...]
     """Marks of the lines of AFTER that had to be solved again."""
+    motion: Motion = STILL
+    """How the whole model was moved; what moved otherwise is told line by line."""
+    storeys: Mapping[str, str] = field(default_factory=dict)
+    """New name by old name of storeys that are called otherwise now."""
 
 
 def reconcile(before: Outcome, after: Outcome, *, solved_again: Sequence[str]) -> Reconciliation:
     """Compare two outcomes of successive revisions."""
-    renamed = _matched_by_place(before.model.lines, after.model.lines)
-    changes = [
-        _change(before, after, old, new, renamed) for old, new in _groups(before, after, renamed)
-    ]
+    motion = _motion(before.model.lines, after.model.lines)
+    renamed = _matched_by_place(before.model.lines, after.model.lines, motion)
+    groups = _groups(before, after, renamed)
+    comparison = _Comparison(before, after, renamed, groups, motion)
+    changes = [comparison.change(old, new) for old, new in groups]
     changes.sort(key=lambda c: (c.state == "unchanged", -c.largest, c.after or c.before))
-    return Reconciliation(before, after, tuple(changes), renamed, tuple(solved_again))
+    storeys = _storeys(before, after, groups)
+    again = tuple(solved_again)
+    return Reconciliation(before, after, tuple(changes), renamed, again, motion, storeys)
 
 
 def of_lines(found: Reconciliation, marks: Sequence[str]) -> Reconciliation:
@@ -108,8 +118,10 @@ def of_lines(found: Reconciliation, marks: Sequence[str]) -> Reconciliation:
 
 def marks_before(before: Outcome, after: Iterable[Line]) -> dict[str, str]:
     """Return the mark that each element of ``after`` had in ``before``, for keeping marks."""
+    after = list(after)
     found = {e: line.mark for line in before.model.lines for e in _elements(line)}
-    renamed = _matched_by_place(before.model.lines, after)
+    motion = _motion(before.model.lines, after)
+    renamed = _matched_by_place(before.model.lines, after, motion)
     return {**found, **{new: found[old] for old, new in renamed.items() if old in found}}
 
 
@@ -136,14 +148,32 @@ def governing(results: Iterable[LineResult]) -> Governing | None:
     )
 
 
-def _relative(before: float, after: float) -> float:
-    scale = max(abs(before), abs(after))
-    return abs(after - before) / scale if scale > 1e-9 else 0.0
+def _relative(before: Governing, after: Governing, kind: Sequence[str]) -> float:
+    """Largest change of effects of one kind, each as a part of itself.
+
+    What is nothing beside the largest of its kind has not changed.
+    """
+    pairs = [(getattr(before, name), getattr(after, name)) for name in kind]
+    largest = max(abs(value) for pair in pairs for value in pair)
+    changes = [
+        abs(now - was) / max(abs(was), abs(now))
+        for was, now in pairs
+        if abs(now - was) > max(SAME_EFFECT * largest, 1e-12)
+    ]
+    return max(changes, default=0.0)
 
 
-def _matched_by_place(before: Iterable[Line], after: Iterable[Line]) -> dict[str, str]:
-    """Match elements that have no namesake by the places of their ends."""
+def _motion(before: Iterable[Line], after: Iterable[Line]) -> Motion:
     old, new = _extents(before), _extents(after)
+    return common_motion([(ends, new[key]) for key, ends in old.items() if key in new])
+
+
+def _matched_by_place(
+    before: Iterable[Line], after: Iterable[Line], motion: Motion
+) -> dict[str, str]:
+    """Match elements that have no namesake by the places of their ends."""
+    old = {key: (motion(a), motion(b)) for key, (a, b) in _extents(before).items()}
+    new = _extents(after)
     left = {key: ends for key, ends in old.items() if key not in new}
     free = {key: ends for key, ends in new.items() if key not in old}
     cells: dict[tuple[int, ...], list[str]] = {}
@@ -245,40 +275,111 @@ def _elements(line: Line) -> list[str]:
     return list(dict.fromkeys(m.element for m in line.members if m.element))
 
 
-def _change(
+class _Comparison:
+    """Compares lines that belong together."""
+
+    def __init__(
+        self,
+        before: Outcome,
+        after: Outcome,
+        renamed: Mapping[str, str],
+        groups: Iterable[tuple[tuple[str, ...], tuple[str, ...]]],
+        motion: Motion,
+    ) -> None:
+        self._before = {r.line.mark: r for r in before.lines}
+        self._after = {r.line.mark: r for r in after.lines}
+        self._names = {**before.model.names, **after.model.names}
+        self._motion = motion
+        self._renamed = renamed
+        alone = [(old[0], new[0]) for old, new in groups if len(old) == len(new) == 1]
+        self._marks = {old: new for old, new in alone if old != new}
+        self._was = {new: old for old, new in alone}
+
+    def change(self, old: tuple[str, ...], new: tuple[str, ...]) -> LineChange:
+        """Return what happened to the lines of these marks, before and after."""
+        was = [self._before[mark] for mark in old]
+        now = [self._after[mark] for mark in new]
+        state = _state(len(was), len(now))
+        moved = 0.0
+        if len(was) == len(now) == 1:
+            reasons = self._reasons(was[0], now[0])
+            moved = _moved(was[0].line, now[0].line, self._motion)
+            if moved > MOVED:
+                reasons.append(f"moved by {moved:.3f} m")
+            if was[0].status != now[0].status:
+                reasons.append(f"{was[0].status} before, {now[0].status} now")
+            state = "changed" if reasons else "unchanged"
+        else:
+            reasons = self._members(was, now)
+        change = LineChange(
+            state=state,
+            before=old,
+            after=new,
+            reasons=tuple(reasons),
+            moved=moved,
+            effects_before=governing(was),
+            effects_after=governing(now),
+        )
+        if reasons and all(map(_from_elsewhere, reasons)) and change.largest < SAME_EFFECT:
+            # What bears on the line changed, or what all lines depend on, but not for this one.
+            return replace(change, state="unchanged", reasons=())
+        return change
+
+    def _reasons(self, was: LineResult, now: LineResult) -> list[str]:
+        known = _with_new_ids(was.basis, {**self._renamed, **self._marks})
+        joints = {**places(was.line, self._names), **places(now.line, self._names)}
+        found = differences(known, now.basis, self._names, joints)
+        return [r for r in found if RECEIVES not in r or not self._hands_down_the_same(r)]
+
+    def _hands_down_the_same(self, reason: str) -> bool:
+        """Whether the line that a reason names hands down what it did before."""
+        mark = reason.partition(f", {RECEIVES}")[0]
+        was, now = self._before.get(self._was.get(mark, "")), self._after.get(mark)
+        if was is None or now is None or was.solution is None or now.solution is None:
+            return False
+        one, other = was.solution, now.solution
+        if one.cases != other.cases or one.reactions.shape != other.reactions.shape:
+            return False
+        largest = max(float(np.abs(one.reactions).max(initial=0.0)), 1e-9)
+        difference = float(np.abs(one.reactions - other.reactions).max(initial=0.0))
+        return difference <= SAME_EFFECT * largest
+
+    def _members(self, was: Iterable[LineResult], now: Iterable[LineResult]) -> list[str]:
+        """Say which elements lines have lost and got that are new, gone, split or merged."""
+        old = dict.fromkeys(self._renamed.get(e, e) for r in was for e in _elements(r.line))
+        new = dict.fromkeys(e for r in now for e in _elements(r.line))
+        lost = [self._named(e) for e in old if e not in new]
+        got = [self._named(e) for e in new if e not in old]
+        return [
+            *([f"without {listed(lost)}"] if lost else []),
+            *([f"with {listed(got)}"] if got else []),
+        ]
+
+    def _named(self, element: str) -> str:
+        return self._names.get(element) or element
+
+
+def _from_elsewhere(reason: str) -> bool:
+    return RECEIVES in reason or reason in FOR_ALL
+
+
+def _storeys(
     before: Outcome,
     after: Outcome,
-    old: tuple[str, ...],
-    new: tuple[str, ...],
-    renamed: Mapping[str, str],
-) -> LineChange:
-    was = [r for r in before.lines if r.line.mark in old]
-    now = [r for r in after.lines if r.line.mark in new]
-    state = _state(len(was), len(now))
-    reasons: list[str] = []
-    moved = 0.0
-    if len(was) == len(now) == 1:
-        names = {**before.model.names, **after.model.names}
-        reasons = differences(_with_new_ids(was[0].basis, renamed), now[0].basis, names)
-        moved = _moved(was[0].line, now[0].line)
-        if moved > MOVED:
-            reasons.append(f"moved by {moved:.3f} m")
-        if was[0].status != now[0].status:
-            reasons.append(f"{was[0].status} before, {now[0].status} now")
-        state = "changed" if reasons else "unchanged"
-    change = LineChange(
-        state=state,
-        before=old,
-        after=new,
-        reasons=tuple(reasons),
-        moved=moved,
-        effects_before=governing(was),
-        effects_after=governing(now),
-    )
-    if reasons and all(RECEIVES in reason for reason in reasons) and change.largest < SAME_EFFECT:
-        # What bears on the line changed, but not what it hands down.
-        return replace(change, state="unchanged", reasons=())
-    return change
+    groups: Iterable[tuple[tuple[str, ...], tuple[str, ...]]],
+) -> dict[str, str]:
+    """Storeys all of whose lines belong to a storey of another, new name now."""
+    old = {line.mark: line.storey or "" for line in before.model.lines}
+    new = {line.mark: line.storey or "" for line in after.model.lines}
+    became: dict[str, set[str]] = {}
+    for marks, others in groups:
+        for mark in marks:
+            became.setdefault(old[mark], set()).update(new[other] for other in others)
+    return {
+        name: found
+        for name, (found, *more) in ((n, sorted(f)) for n, f in became.items() if n and f)
+        if not more and found and found not in old.values() and name not in new.values()
+    }
 
 
 def _state(before: int, after: int) -> str:
@@ -299,8 +400,10 @@ def _with_new_ids(basis: Mapping[str, str], renamed: Mapping[str, str]) -> dict[
     return out
 
 
-def _moved(was: Line, now: Line) -> float:
+def _moved(was: Line, now: Line, motion: Motion) -> float:
     """Largest distance between joints of the same number; 0 where their numbers differ."""
     if len(was.joints) != len(now.joints):
         return 0.0
-    return max(math.dist(a.point, b.point) for a, b in zip(was.joints, now.joints, strict=True))
+    return max(
+        math.dist(motion(a.point), b.point) for a, b in zip(was.joints, now.joints, strict=True)
+    )
