@@ -98,6 +98,15 @@ class AxisMember:
 
 
 @dataclass(frozen=True, slots=True)
+class Opening:
+    """A hole in a wall: its convex outline in plan (x, y) and its levels."""
+
+    bottom: float
+    top: float
+    corners: tuple[tuple[float, float], ...]
+
+
+@dataclass(frozen=True, slots=True)
 class Carrier:
     """A physical element that beams may bear on: a column, wall, footing, slab or other beam.
 
@@ -117,6 +126,7 @@ class Carrier:
     material: Material | None = None
     storey: str | None = None
     up: Vector = (1.0, 0.0, 0.0)
+    openings: tuple[Opening, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

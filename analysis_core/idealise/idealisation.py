@@ -23,6 +23,7 @@ from analysis_core.idealise.job_conditions import (
 )
 from analysis_core.idealise.leaning import fault_leaning
 from analysis_core.idealise.log import Log
+from analysis_core.idealise.openings import report_openings
 from analysis_core.idealise.physical import physical_scheme, put_legs
 from analysis_core.idealise.placing import Placer
 from analysis_core.idealise.properties import PropertyTable
@@ -65,6 +66,7 @@ def _idealised(building: Building, settings: Settings) -> LineModel:
         put_job_supports(scheme.drafts, settings, chooser, log)
         support_chains(physical, settings, log)
         meetings.let_carry(physical, table, settings.tolerances, log)
+        report_openings(physical, log)
         let_lean(scheme, settings.tolerances, log)
         explain_free_ends(physical, log)
         let_columns_stand(physical, table, settings.tolerances, log)

@@ -11,7 +11,7 @@ from building_makers import finding, only, shuffled, slugs, spans, turned
 from physical_makers import beam, block, column, house, wall
 
 from analysis_core import distribution
-from analysis_core.building import Building
+from analysis_core.building import Building, Opening
 from analysis_core.idealise import idealise
 from analysis_core.model import DistributedForce, PointForce, Support
 from analysis_core.settings import ActionSetting, Analysis, Selector, Settings
@@ -237,6 +237,30 @@ def test_a_beam_on_top_of_a_wall_is_held_along_it_and_a_lintel_at_its_ends():
     assert spans(only(laid)) == [0.9] * 5 + [4.5]
     assert spans(only(lintel)) == [4.5, 4.5]
     assert finding(laid, "lies-along").severity == "warning"
+
+
+@pytest.mark.parametrize(
+    ("levels", "x", "severity"),
+    [
+        ((0.0, Z - 0.2), 0.0, "warning"),  # nothing left under the beam
+        ((0.0, Z - 0.5), 0.0, "note"),  # a lintel of 300 mm
+        ((0.0, Z - 0.2), 1.0, ""),  # beside the beam
+        ((Z - 0.25, Z + 0.3), 0.0, ""),  # the pocket of the beam itself
+        ((0.0, 1.0), 0.0, ""),  # far below
+    ],
+)
+def test_a_bearing_over_an_opening_is_told_by_what_is_left_of_the_wall(levels, x, severity):
+    corners = ((x - 0.45, -0.3), (x + 0.45, -0.3), (x + 0.45, 0.3), (x - 0.45, 0.3))
+    holed = replace(
+        wall("W", (-3.0, -0.1, 0.0), (3.0, 0.1, Z - 0.2)), openings=(Opening(*levels, corners),)
+    )
+    post = column("C", 0.0, 5.0, 0.0, Z - 0.2)
+    found = idealise(house([beam("B", (0.0, 0.0, Z), (0.0, 5.0, Z))], [holed, post]), Settings())
+
+    told = [f for f in found.findings if f.slug == "bearing-over-opening"]
+    assert [f.severity for f in told] == [severity] * bool(severity)
+    if severity == "note":
+        assert "300 mm of wall between" in told[0].message
 
 
 def test_of_two_posts_side_by_side_one_is_the_bearing():

@@ -546,6 +546,23 @@ def test_a_wall_cut_by_a_roof_ends_where_it_is_cut(tmp_path):
     )
 
 
+def test_walls_come_with_their_openings(tmp_path):
+    maker = Maker()
+    body = maker.extrusion(maker.rectangle(6000.0, 200.0), 3000.0)
+    wall = maker.element("IfcWall", "W", [body], at=(3000, 0, 1000))
+    hole = maker.extrusion(maker.rectangle(900.0, 400.0), 2100.0)
+    door = maker.element("IfcOpeningElement", "door", [hole], at=(500, 0, 0),
+                         parent=wall.ObjectPlacement)  # fmt: skip
+    maker.root("IfcRelVoidsElement", RelatingBuildingElement=wall, RelatedOpeningElement=door)
+
+    (carrier,) = maker.read(tmp_path).carriers
+
+    (opening,) = carrier.openings
+    assert (opening.bottom, opening.top) == pytest.approx((1.0, 3.1))
+    xs = [x for x, _ in opening.corners]
+    assert (min(xs), max(xs)) == pytest.approx((3.05, 3.95))
+
+
 def test_slabs_are_areas_with_their_openings(tmp_path):
     maker = Maker()
     shape = [(0, 0), (8000, 0), (8000, 3000), (5000, 3000), (5000, 7000), (0, 7000)]

@@ -8,7 +8,7 @@ from typing import Any, NamedTuple
 
 import numpy as np
 
-from analysis_core.building import Area
+from analysis_core.building import Area, Opening
 from analysis_core.ifc.bodies.extents import Extent, ExtentReader, plan_rings
 from analysis_core.ifc.bodies.items import Item, Mesh, Prism
 from analysis_core.ifc.bodies.mesh_cuts import hull
@@ -75,6 +75,18 @@ class AreaReader:
             type_name="" if space else elements.type_name(record),
             material=None if space else elements.unnoted_material(elements.choice(record)),
         )
+
+    def wall_openings(self, record: Record) -> tuple[Opening, ...]:
+        """Return the openings of a wall that can be read."""
+        found = []
+        for opening in self.openings.get(record.id, ()):
+            with suppress(*READ_ERRORS):
+                hole = Record.of(opening)
+                items = self._elements.shape(hole).items
+                reach = self._extents.extent(items, self._elements.frame(hole))
+                if reach is not None:
+                    found.append(Opening(reach.bottom, reach.top, reach.corners))
+        return tuple(found)
 
     def _opening_rings(self, record: Record, plan: _Plan, extent: Extent) -> list[Floats]:
         rings: list[Floats] = []

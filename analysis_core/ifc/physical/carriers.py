@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from analysis_core.building import Area, Carrier
+from analysis_core.building import Area, Carrier, Opening
 from analysis_core.ifc.bodies.extents import Extent, ExtentReader
 from analysis_core.ifc.physical.areas import AreaReader
 from analysis_core.ifc.physical.elements import Elements
@@ -38,8 +38,9 @@ class CarrierReader:
     def add(self, record: Record, placed: Placed, ifc_class: str) -> Extent:
         """Add an element by its outline, in several convex pieces where it is not convex."""
         extent = self._extent(placed)
+        openings = self.areas_of.wall_openings(record) if "Wall" in record.ifc_class else ()
         for piece in self._extents.pieces(placed.shape.items, placed.frame):
-            self._append(record, ifc_class, piece, placed)
+            self._append(record, ifc_class, piece, placed, openings=openings)
         return extent
 
     def add_slab(self, record: Record) -> None:
@@ -70,6 +71,7 @@ class CarrierReader:
         extent: Extent,
         placed: Placed,
         laid: Laid | None = None,
+        openings: tuple[Opening, ...] = (),
     ) -> None:
         check_place((extent.bottom, extent.top, *(v for corner in extent.corners for v in corner)))
         elements = self._elements
@@ -88,6 +90,7 @@ class CarrierReader:
                 material=elements.material(record, placed.choice) if laid else None,
                 storey=elements.storey(record),
                 up=lying.up if lying else (1.0, 0.0, 0.0),
+                openings=openings,
             )
         )
 
