@@ -15,12 +15,12 @@ from typing import TYPE_CHECKING, cast
 from analysis_core.findings import Finding, Severity
 from analysis_core.model import Joint, Line, LineModel, Member, Support
 from analysis_core.results import Extreme, LineResult, MemberEnvelope, Outcome
-from analysis_core.solving.line_details import Redistributed, detail_of
-from analysis_core.solving.stacks import Received
 from analysis_core.units import DisplayUnits
 
 if TYPE_CHECKING:
     from analysis_core.revision.posted_states import PostedState
+    from analysis_core.solving.line_details import LineDetail, Redistributed
+    from analysis_core.solving.stacks import Received
 
 CAUTION = (
     "Caution: computed from the model as idealised. Local codes govern; a licensed engineer must "
@@ -267,7 +267,7 @@ def _deflection_cells(
     result: LineResult, name: str, members: list[tuple[Member, float]], units: DisplayUnits
 ) -> list[str]:
     """Largest deflection from the supports of the span, its place, ratio and use of the limit."""
-    span = next((d for d in detail_of(result).deflections if str(d.span.number) == name), None)
+    span = next((d for d in _detail_of(result).deflections if str(d.span.number) == name), None)
     if span is None:
         return ["-"] * 4
     offsets = {member.id: at for member, at in members}
@@ -335,7 +335,7 @@ def _redistribution_text(outcome: Outcome, units: DisplayUnits) -> str:
     rows = []
     notes = []
     for result in outcome.lines:
-        found = detail_of(result).redistributed if result.detail else None
+        found = _detail_of(result).redistributed if result.detail else None
         if found is None:
             continue
         mark = safe(result.line.mark)
@@ -360,6 +360,12 @@ def _redistribution_text(outcome: Outcome, units: DisplayUnits) -> str:
     head = ("line", "span", "sagging elastic", "redistributed", "hogging elastic", "redistributed")
     text = table(head, ("", "", *[moment] * 4), rows) if rows else ""
     return "\n".join(["Redistribution", *([text] if text else []), *notes])
+
+
+def _detail_of(result: LineResult) -> LineDetail:
+    from analysis_core.solving.line_details import detail_of  # late: words need no solver
+
+    return detail_of(result)
 
 
 def _limit_text(found: Redistributed) -> str:
@@ -402,7 +408,7 @@ def _reactions_table(outcome: Outcome, units: DisplayUnits) -> str:
 
 def _received_text(outcome: Outcome, units: DisplayUnits) -> str:
     """What columns, walls and footings carry, from the top down."""
-    found = cast(tuple[Received, ...], outcome.received)
+    found = cast("tuple[Received, ...]", outcome.received)
     if not found:
         return ""
     names = {each.element.global_id: each.element.name for each in found}

@@ -10,7 +10,6 @@ import FreeCADGui
 from ..host_profiles import profile_lists
 from ..present.member_decisions import decide_members
 from ..present.scopes import Scope, elements_of, every_kind, scopes
-from ..profile_shelf import Shelf, ShelfKeeper, lightest, narrowed
 from ..qt import QtCore
 from ..texts import translate
 from ..worker import CancelledError, Progress
@@ -18,6 +17,7 @@ from ..worker import CancelledError, Progress
 if TYPE_CHECKING:
     from analysis_core.checking.choosing import Choice
 
+    from ..profile_shelf import Shelf, ShelfKeeper
     from .controller import Desk
 
 
@@ -27,7 +27,7 @@ class Choosing(QtCore.QObject):
     def __init__(self, desk: Desk) -> None:
         super().__init__()
         self._desk = desk
-        self._keeper = ShelfKeeper()
+        self._keeper: ShelfKeeper | None = None
         self.section_dialog: Any = None
         self.lightest_dialog: Any = None
         self._sought_for = ""
@@ -81,8 +81,12 @@ class Choosing(QtCore.QObject):
     def _with_shelf(self, opened: Any, show: Callable[[Shelf], None]) -> None:
         settings, lists = opened.settings, profile_lists()
 
+        from ..profile_shelf import ShelfKeeper  # late: start-up of the workbench
+
+        keeper = self._keeper = self._keeper or ShelfKeeper()
+
         def task(progress: Progress) -> Shelf:
-            return self._keeper.fill(opened, settings, lists, progress)
+            return keeper.fill(opened, settings, lists, progress)
 
         def done(shelf: Shelf) -> None:
             if self._desk.solved is opened:
@@ -101,6 +105,8 @@ class Choosing(QtCore.QObject):
             return
         settings, self._sought_for = opened.settings, opened.text
         kinds, names = wanted
+        from ..profile_shelf import lightest, narrowed  # late: start-up of the workbench
+
         candidates = narrowed(shelf.offers[source].candidates, kinds, names)
 
         def task(progress: Progress) -> Any:

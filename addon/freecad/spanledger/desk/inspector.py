@@ -6,9 +6,8 @@ A decision is sent as a title and a change of the job file's text; nothing is co
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from typing import Any, get_args
+from typing import TYPE_CHECKING, Any, get_args
 
-from analysis_core.checking.members import MemberChecks
 from analysis_core.model import RIGID, Action, Nature
 from analysis_core.results import LineResult, Outcome
 from analysis_core.settings import Settings
@@ -32,6 +31,9 @@ from ..present.load_path import Path
 from ..qt import QtWidgets, Signal
 from ..texts import translate
 from .fields import button, choice, entry, facts_label, facts_text, heading
+
+if TYPE_CHECKING:
+    from analysis_core.checking.members import MemberChecks
 
 Change = Callable[[str], str]
 

@@ -4,12 +4,15 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from analysis_core.report.tables import safe
-from analysis_core.revision.reconcile import LineChange, Reconciliation
 from analysis_core.units import DisplayUnits
 
 from .words import noop, say
+
+if TYPE_CHECKING:
+    from analysis_core.revision.reconcile import LineChange, Reconciliation
 
 # Told apart by shape, not by colour alone.
 GLYPHS = {

@@ -3,14 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from typing import TYPE_CHECKING
 
-from analysis_core.checking.members import MemberChecks
 from analysis_core.report.tables import safe
 from analysis_core.results import LineResult
-from analysis_core.solving.line_details import detail_of
 from analysis_core.units import DisplayUnits
 
 from .words import say
+
+if TYPE_CHECKING:
+    from analysis_core.checking.members import MemberChecks
 
 
 def largest_uses(checks: Mapping[str, Sequence[MemberChecks]]) -> dict[str, float]:
@@ -45,6 +47,8 @@ def check_facts(members: Sequence[MemberChecks], member: int) -> list[tuple[str,
 
 def deflection_facts(result: LineResult, member: int, units: DisplayUnits) -> list[tuple[str, str]]:
     """Return what part of its limit the deflection of a member's span takes."""
+    from analysis_core.solving.line_details import detail_of  # late: start-up of the workbench
+
     if result.detail is None:
         return []
     facts = []

@@ -5,13 +5,16 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
-from analysis_core.checking.choosing import Choice, Effect, Tried
 from analysis_core.report.tables import safe
 from analysis_core.units import DisplayUnits
 
 from .profiles import mass_text, origin_words
 from .words import noop, say
+
+if TYPE_CHECKING:
+    from analysis_core.checking.choosing import Choice, Effect, Tried
 
 COLUMNS = (
     noop("Candidate"), noop("Kind"), noop("Mass, kg/m"), noop("Use"), noop("Deflection"),

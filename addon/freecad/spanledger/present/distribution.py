@@ -4,19 +4,20 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from itertools import accumulate
-from typing import get_args
+from typing import TYPE_CHECKING, get_args
 
 from analysis_core.distribution.cycles import Order
-from analysis_core.distribution.record import DistributionRecord, distribute
-from analysis_core.effects.combinations import combine_line
 from analysis_core.errors import AnalysisError
 from analysis_core.model import Combination
-from analysis_core.report.record_rows import RecordRow, RecordTable, closing_note, record_tables
 from analysis_core.results import LineResult
 from analysis_core.units import DisplayUnits
 
 from .diagrams import View
 from .words import noop, say
+
+if TYPE_CHECKING:
+    from analysis_core.distribution.record import DistributionRecord
+    from analysis_core.report.record_rows import RecordRow, RecordTable
 
 ORDERS: tuple[Order, ...] = get_args(Order)
 ORDER_WORDS = {
@@ -52,6 +53,10 @@ def recorded(
     result: LineResult, view: View, units: DisplayUnits, order: Order = "largest"
 ) -> Recorded | str:
     """Return the recorded distribution of a line, or why there is none, in a sentence."""
+    from analysis_core.distribution.record import distribute  # late: start-up of the workbench
+    from analysis_core.effects.combinations import combine_line
+    from analysis_core.report.record_rows import closing_note, record_tables
+
     if result.status != "balanced":
         return say("This line is not analysed; its findings say why.")
     if view.kind == "envelope":

@@ -4,13 +4,15 @@ from __future__ import annotations
 
 from collections.abc import Collection, Mapping, Sequence
 from dataclasses import dataclass
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
 from analysis_core.results import LineResult, Outcome
-from analysis_core.revision.posted_states import PostedState
 from analysis_core.units import DisplayUnits
 
 from .words import noop, say
+
+if TYPE_CHECKING:  # it brings the IFC library in, which start-up need not wait for
+    from analysis_core.revision.posted_states import PostedState
 
 State = Literal["needs a decision", "ready", "balanced", "stale", "posted"]
 STATES: tuple[State, ...] = ("needs a decision", "ready", "balanced", "stale", "posted")

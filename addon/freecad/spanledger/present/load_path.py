@@ -4,13 +4,16 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
-from analysis_core.ifc.posting.support_reactions import SupportReactions, support_reactions
 from analysis_core.report.tables import safe
 from analysis_core.results import Outcome
 from analysis_core.units import DisplayUnits
 
 from .words import say
+
+if TYPE_CHECKING:
+    from analysis_core.ifc.posting.support_reactions import SupportReactions
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,6 +68,8 @@ def paths_on_member(outcome: Outcome, line: int, member: int, units: DisplayUnit
 
 def bearing_rows(outcome: Outcome, units: DisplayUnits) -> list[BearingRow]:
     """Return what every supporting element receives, the most loaded first."""
+    from analysis_core.ifc.posting.support_reactions import support_reactions  # late: start-up
+
     names, numbers = outcome.model.names, _numbers(outcome)
     rows = [
         _row(element, found, numbers, names, units)

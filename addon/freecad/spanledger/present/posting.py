@@ -4,16 +4,19 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
-from analysis_core.ifc.posting.governing import ElementEffects, element_effects, element_parts
-from analysis_core.ifc.posting.support_reactions import SupportReactions, support_reactions
-from analysis_core.ifc.posting.writer import PostReport
-from analysis_core.ifc.updating import Change
 from analysis_core.report.tables import safe
 from analysis_core.results import Outcome
 from analysis_core.units import DisplayUnits
 
 from .words import say
+
+if TYPE_CHECKING:
+    from analysis_core.ifc.posting.governing import ElementEffects
+    from analysis_core.ifc.posting.support_reactions import SupportReactions
+    from analysis_core.ifc.posting.writer import PostReport
+    from analysis_core.ifc.updating import Change
 
 MOST_ELEMENTS = 1000
 
@@ -74,6 +77,9 @@ def preview(
     refusal: str = "",
 ) -> PostPreview:
     """Return what posting this outcome will write, and ``changes`` of members before it."""
+    from analysis_core.ifc.posting.governing import element_effects, element_parts  # late: start-up
+    from analysis_core.ifc.posting.support_reactions import support_reactions
+
     names = dict(outcome.model.names)
     parts = element_parts(outcome)
     reactions = support_reactions(outcome)

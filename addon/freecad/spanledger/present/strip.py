@@ -18,7 +18,6 @@ from analysis_core.model import (
     Member,
 )
 from analysis_core.results import Extreme, LineEnvelope, LineResult
-from analysis_core.solving.line_details import detail_of
 from analysis_core.units import DisplayUnits
 
 from .diagrams import Quantity, View, line_ordinates, view_envelopes
@@ -243,6 +242,8 @@ def _redistributed(result: LineResult, view: View) -> LineEnvelope | None:
     """Return the strength envelope after redistribution, where the engineer asked for it."""
     if (view.kind, view.name) != ("envelope", "strength") or result.detail is None:
         return None
+    from analysis_core.solving.line_details import detail_of  # late: start-up of the workbench
+
     found = detail_of(result).redistributed
     return found.envelope if found is not None else None
 
