@@ -34,7 +34,7 @@ from analysis_core.effects.deflection_limits import (
 from analysis_core.effects.envelopes import envelope
 from analysis_core.effects.states import State, governing_states, state_stations
 from analysis_core.model import Combination, Line, LineModel, Member, Transfer
-from analysis_core.results import LineEnvelope, LineResult, LineSolution, Stations
+from analysis_core.results import Extreme, LineEnvelope, LineResult, LineSolution, Stations
 from analysis_core.settings import Settings
 from analysis_core.solving.line_details import DetailInput, detail_of
 
@@ -198,7 +198,7 @@ def designs(
         out.append(
             MemberDesign(
                 member.id, member.section, member.material, member.length,
-                tuple(_field(fields, r, stretch, member) for r in range(len(fields.at.names))),
+                _fields(fields, stretch, member),
                 Governing(found.sagging, found.hogging, shear),
                 restraints(line, stretch, member, model, settings, transfers),
                 cantilever=span.cantilever if span else bool(stretch.loose),
@@ -307,7 +307,28 @@ def _of_states(
     return LineFields(effects, at, axial, durations, found, bearings)
 
 
-def _field(fields: LineFields, row: int, stretch: Stretch, member: Member) -> EffectField:
+_Extremes = Sequence[tuple[Extreme, bool]]
+"""Extremes of a member, each with whether it is one of moments (or else of shears)."""
+
+
+def _fields(fields: LineFields, stretch: Stretch, member: Member) -> tuple[EffectField, ...]:
+    extremes = [
+        (extreme, is_moment)
+        for found in (of_line.members[member.id] for of_line in fields.envelopes)
+        for extreme, is_moment in (
+            (found.sagging, True), (found.hogging, True),
+            (found.shear_max, False), (found.shear_min, False),
+        )
+    ]  # fmt: skip
+    return tuple(
+        _field(fields, row, stretch, member, [e for e in extremes if e[0].source == name])
+        for row, name in enumerate(fields.at.names)
+    )
+
+
+def _field(
+    fields: LineFields, row: int, stretch: Stretch, member: Member, extremes: _Extremes
+) -> EffectField:
     at, m = fields.at, member.id
     along = None
     if len(stretch.runs) > 1:
@@ -317,23 +338,19 @@ def _field(fields: LineFields, row: int, stretch: Stretch, member: Member) -> Ef
             xs.append((run.offset + run.sign * at.x[run.member.id])[order])
             moments.append((run.sign * at.moment[row, run.member.id])[order])
         along = np.concatenate(xs), np.concatenate(moments)
-    x, moment, shear = _with_extremes(fields, row, m)
+    x, moment, shear = _with_extremes(fields, row, m, extremes)
     low, high = sorted(fields.axial[row, m].tolist())
     return EffectField(at.names[row], x, moment, shear, along, (low, high))
 
 
-def _with_extremes(fields: LineFields, row: int, member: int) -> tuple[Floats, Floats, Floats]:
+def _with_extremes(
+    fields: LineFields, row: int, member: int, extremes: _Extremes
+) -> tuple[Floats, Floats, Floats]:
     """Effects at the stations, and at the exact places of the extremes that this state governs."""
     at = fields.at
     x, moment, shear = at.x[member], at.moment[row, member], at.shear[row, member]
-    for envelope_ in fields.envelopes:
-        found = envelope_.members[member]
-        for extreme, is_moment in (
-            (found.sagging, True), (found.hogging, True),
-            (found.shear_max, False), (found.shear_min, False),
-        ):  # fmt: skip
-            if extreme.source != at.names[row] or np.abs(x - extreme.x).min() < 1e-9:
-                continue
+    for extreme, is_moment in extremes:
+        if np.abs(x - extreme.x).min() >= 1e-9:
             i = int(np.searchsorted(x, extreme.x))
             m, v = (float(np.interp(extreme.x, x, values)) for values in (moment, shear))
             m, v = (extreme.value, v) if is_moment else (m, extreme.value)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 
 from analysis_core.checks.design import Restraints
 from analysis_core.effects.deflection_limits import Span
@@ -101,7 +102,7 @@ def restraints(
     directly on this one.
     """
     top, bottom = set(stretch.held), set(stretch.held)
-    units = display_units(settings.display.system, settings.display.units)
+    units = _units(settings.display.system, tuple(sorted(settings.display.units.items())))
     reasons = [_at_ends(stretch, member, units)]
     bearing: dict[str, list[str]] = {}
     for run in stretch.runs:
@@ -137,6 +138,12 @@ def restraints(
         tuple(sorted(top)), tuple(sorted(bottom)), top_all, bottom_all, "; ".join(reasons),
         stretch.loose,
     )  # fmt: skip
+
+
+@lru_cache(maxsize=8)
+def _units(system: str, overrides: tuple[tuple[str, str], ...]) -> DisplayUnits:
+    """The display units of a job, once for all of its members."""
+    return display_units(system, dict(overrides))
 
 
 def continuous_ends(line: Line, span: Span) -> int:

@@ -45,7 +45,9 @@ def numbers(step: Step, units: DisplayUnits) -> Markup:
     values = {name: value_text(value, quantity, units) for name, value, quantity in step.operands}
     multiplied = _SIDE_BY_SIDE.sub(" · ", step.formula)
     multiplied = _POWER.sub(r"({\1})\2", multiplied)
-    return symbols(_OPERAND.sub(lambda match: values.get(match[1], match[1]), multiplied))
+    text = _OPERAND.sub(lambda match: values.get(match[1], match[1]), multiplied)
+    # Numbers rarely repeat: without symbols in them they stay out of the cache.
+    return symbols(text) if "_" in text else Markup(text_of(text))
 
 
 def bounded(step: Step) -> bool:
