@@ -47,7 +47,7 @@ TITLES: Mapping[str, str] = {
 DEFLECTION_LIMIT = "deflection limit"
 _TIMBER = "en-1995-1-1"
 _STEEL = ("en-1993-1-1", "aisc-360")
-_TIMBER_ELASTIC = "Timber does not redistribute moments. All checks use the elastic moments."
+_ELASTIC = "All checks of the line use the elastic moments."
 _DEFLECTION_NOT_COVERED = (
     "Elastic, from the rigidities as modelled; cracking and creep are not covered here."
 )
@@ -96,13 +96,14 @@ def check_line(
     on_it = (direct_bearing(model) if bearing is None else bearing).get(result.line.mark, ())
     codes = [_code(member, result, settings) for member in result.line.members]
     plain = line_fields(result, elastic_effects(result))
-    shifted = redistributed_effects(result)
-    moved = None
+    factored = _factored(result)
+    moved: list[MemberDesign | None] | None = None
+    why_elastic, shifted = "", redistributed_effects(result)
     if shifted is not None:
         moved = designs(result, line_fields(result, shifted), model, settings, on_it)
+        why_elastic = _why_elastic(result.line.members, moved, codes, settings, factored)
     timber = timber_fields(result, model, settings) if _TIMBER in codes else plain
     sags = timber_sags(result, _creep(settings)) if _TIMBER in codes else None
-    factored = _factored(result)
     prepared = designs(result, plain, model, settings, on_it)
     of_timber = prepared
     if timber is not plain:
@@ -113,7 +114,9 @@ def check_line(
         if design is not None and code == _TIMBER:
             design = replace(design, sags=None if sags is None else sags.get(member.id, ()))
         after = moved[member.id] if moved is not None else None
-        checks = _checks(member, design, after, code, settings, timber.durations, factored)
+        checks = _checks(
+            member, design, after, why_elastic, code, settings, timber.durations, factored
+        )
         held = design.restraints.reason if design is not None else ""
         checks = (*checks, *_deflections(result, member))
         out.append(MemberChecks(member.id, code if code in FIGURES else "", held, checks))
@@ -121,24 +124,21 @@ def check_line(
 
 
 def _checks(
-    member: Member, design: MemberDesign | None, moved: MemberDesign | None, code: str,
-    settings: Settings, durations: Mapping[str, str], factored: bool,
+    member: Member, design: MemberDesign | None, moved: MemberDesign | None, why_elastic: str,
+    code: str, settings: Settings, durations: Mapping[str, str], factored: bool,
 ) -> tuple[Check, ...]:  # fmt: skip
-    """``moved``: the same with redistributed moments, where they were; timber stays elastic."""
+    """``moved``: the same with redistributed moments, which hold unless ``why_elastic``."""
     reason = _outside(member, code, factored)
     if reason or design is None:
         return (not_checked("resistance", reason),)
-    known = FIGURES[code]
-    figures = Figures(known, {k: v for k, v in settings.checks.replace.items() if k in known})
-    shifts: list[Check | None] = []
-    if moved is not None and code in _STEEL:
-        if reason := steel_redistribution.why_elastic(moved, figures, code):
-            shifts, moved = [steel_redistribution.elastic_instead(reason, code)], None
-        else:
-            shifts = [steel_redistribution.check_redistribution(moved, code)]
-    if moved is not None and code == _TIMBER:
-        shifts, moved = [not_checked("redistribution", _TIMBER_ELASTIC, "EN 1995-1-1")], None
-    design = moved or design
+    figures = _figures(code, settings)
+    shift: Check | None = None
+    if moved is not None and why_elastic:
+        shift = not_checked("redistribution", f"{why_elastic} {_ELASTIC}")
+    elif moved is not None:
+        design = moved
+        if code in _STEEL:
+            shift = steel_redistribution.check_redistribution(moved, code)
     kind = design.material.category
     run: dict[str, Callable[[], Sequence[Check]]] = {
         "en-1993-1-1": lambda: steel_en.check_steel(design, figures),
@@ -147,7 +147,38 @@ def _checks(
         "aci-318-19": lambda: concrete_aci.check_concrete(design, figures),
         "en-1995-1-1": lambda: timber_en.check_timber(design, figures, durations, kind),
     }
-    return (*run[code](), *(check for check in shifts if check is not None))
+    return (*run[code](), *(() if shift is None else (shift,)))
+
+
+def _why_elastic(
+    members: Sequence[Member],
+    moved: Sequence[MemberDesign | None],
+    codes: Sequence[str],
+    settings: Settings,
+    factored: bool,
+) -> str:
+    """Why a line must keep its elastic moments; "" where all of its members may redistribute.
+
+    A support moment is one for both members beside it, so that one member decides for all.
+    """
+    for member, design, code in zip(members, moved, codes, strict=True):
+        reason = ""
+        if code == _TIMBER:
+            reason = "Timber does not redistribute moments."
+        elif code in _STEEL and (design is None or _outside(member, code, factored)):
+            reason = "It cannot be checked, so that its class is not known."
+        elif code in _STEEL and design is not None:
+            figures = _figures(code, settings)
+            reason = steel_redistribution.why_elastic(design, figures, code)
+        if reason:
+            name = f"span {member.span}" if member.span else f"member {member.id}"
+            return f"Of {name}: {reason}"
+    return ""
+
+
+def _figures(code: str, settings: Settings) -> Figures:
+    known = FIGURES[code]
+    return Figures(known, {k: v for k, v in settings.checks.replace.items() if k in known})
 
 
 def _outside(member: Member, code: str, factored: bool) -> str:

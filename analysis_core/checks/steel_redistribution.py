@@ -11,7 +11,6 @@ from analysis_core.checks.steel_en_section import classify, outside, yield_stren
 from analysis_core.checks.working import Check, Figures, Working, not_checked
 
 _NAME = "redistribution"
-_ELASTIC = "All checks use the elastic moments."
 _KSI = 6894757.293168361
 _CLAUSES = {"en-1993-1-1": "EN 1993-1-1, 5.4.1(4)B", "aisc-360": "AISC 360, B3.3"}
 
@@ -22,11 +21,6 @@ def why_elastic(design: MemberDesign, figures: Figures, code: str) -> str:
     ``design`` holds the redistributed moments.
     """
     return _why_en(design, figures) if code == "en-1993-1-1" else _why_aisc(design, figures)
-
-
-def elastic_instead(reason: str, code: str) -> Check:
-    """Return what is said of a redistribution that the member does not allow."""
-    return not_checked(_NAME, f"{reason} {_ELASTIC}", _CLAUSES[code])
 
 
 def check_redistribution(design: MemberDesign, code: str) -> Check | None:
@@ -48,11 +42,9 @@ def check_redistribution(design: MemberDesign, code: str) -> Check | None:
 
 def _why_en(design: MemberDesign, f: Figures) -> str:
     """5.4.1(4)B: class 1 or 2, and lateral torsional buckling prevented."""
-    if outside(design):
-        return ""  # which says so itself
-    fy = yield_strength(design)
+    fy = 0.0 if outside(design) else yield_strength(design)
     if not fy:
-        return ""
+        return "It is outside the checks, so that its class is not known."
     class_, _ = classify(design, fy)
     if class_ > 2:
         return f"The section is of class {class_}; redistribution needs class 1 or 2."

@@ -350,6 +350,23 @@ def test_steel_takes_redistributed_moments_where_its_class_and_its_restraint_all
     assert abs(kept["bending"].demand) == pytest.approx(plain, rel=1e-6)
 
 
+def test_one_member_that_may_not_redistribute_decides_for_its_line():
+    """The moment at a bearing is one for both members beside it."""
+    stout, thin = box("RHS", 0.30, 0.20, 0.010), box("thin", 0.30, 0.20, 0.0058)
+    lengths = (6.0, 6.0)
+    beam = line(stout, S355, lengths, actions=uniform("G", 20e3, lengths))
+    weak = replace(beam.members[1], section=thin, pieces=(Piece(6.0, (210e9 * thin.inertia,)),))
+    mixed = replace(beam, members=(beam.members[0], weak))
+    rules = RuleSettings(redistribution=(Redistribution(0.1),))
+
+    _, found, _ = checked(mixed, Settings(rules=rules), cases=CASES[:1])
+    _, elastic, _ = checked(mixed, cases=CASES[:1])
+
+    for member in (0, 1):
+        assert "Of span 2: The section is of class 3" in found[member]["redistribution"].reason
+        assert found[member]["bending"] == elastic[member]["bending"]
+
+
 def test_timber_keeps_its_elastic_moments():
     moved = two_spans_redistributed(rectangle(0.1, 0.3), C24, 0.1, load=1e3)[1][0]
     elastic = two_spans_redistributed(rectangle(0.1, 0.3), C24, None, load=1e3)[1][0]
