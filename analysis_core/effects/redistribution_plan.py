@@ -117,8 +117,8 @@ def _of_limit(
         return [
             _finding(
                 line, severity, "redistribution-limit-unknown",
-                f"{limit.clause}: the limit needs {limit.missing}. State it in the job file, or see "
-                f"the member checks, which hold it with the reinforcement they require.",
+                f"{limit.clause}: the limit needs {limit.missing}. State it in the job file, or "
+                f"see the member checks, which hold it with the reinforcement they require.",
             )
         ]  # fmt: skip
     return []
