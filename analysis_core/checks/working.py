@@ -50,6 +50,10 @@ class Check:
     not_covered: str = ""
 
 
+_ROUNDING = 1e-9
+"""By which a use may exceed 1 that is 1 by its formula: reinforcement made to just suffice."""
+
+
 @dataclass(slots=True)
 class Working:
     """Collects the steps of a check as they are computed."""
@@ -86,7 +90,7 @@ class Working:
     ) -> Check:
         """Return the finished check with the steps so far."""
         use = abs(demand) / resistance if resistance > 0.0 else float("inf")
-        status: Status = "satisfied" if use <= 1.0 else "not satisfied"
+        status: Status = "satisfied" if use <= 1.0 + _ROUNDING else "not satisfied"
         return Check(
             name, status, clause, demand, resistance, quantity, use, x, source,
             tuple(self.steps), not_covered=not_covered,
