@@ -11,6 +11,7 @@ import io
 import math
 import uuid
 import zipfile
+from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from datetime import UTC, datetime
@@ -53,16 +54,21 @@ def bcf_bytes(outcome: Outcome, issues: Sequence[Issue], *, now: datetime | None
     """Return a BCF 2.1 file as bytes."""
     date = (now or datetime.now(UTC)).strftime("%Y-%m-%dT%H:%M:%SZ")
     lines = {line.mark: line for line in outcome.model.lines}
-    everything = _points(outcome.model.lines)
+    everything, places = _points(outcome.model.lines), _places(outcome.model.lines)
+    taken: Counter[str] = Counter()
     out = io.BytesIO()
     with zipfile.ZipFile(out, "w", zipfile.ZIP_DEFLATED) as archive:
         _put(archive, "bcf.version", _version())
         for index, issue in enumerate(issues):
             key = _clean(f"{outcome.file}/{issue.title}/{issue.text}")
-            topic = str(uuid.uuid5(_NAMESPACE, key))
+            taken[key] += 1  # the same words may be said of several elements
+            told = key if taken[key] == 1 else f"{key}/{taken[key]}"
+            topic = str(uuid.uuid5(_NAMESPACE, told))
             view = str(uuid.uuid5(_NAMESPACE, topic))
-            chosen = [lines[issue.line]] if issue.line in lines else _lines_of(issue, outcome)
-            points = _points(chosen) or everything
+            shown = [p for element in issue.elements for p in places.get(element, ())]
+            if issue.line in lines:
+                shown += _points([lines[issue.line]])
+            points = shown or everything
             _put(archive, f"{topic}/markup.bcf", _markup(outcome, issue, topic, view, index, date))
             _put(archive, f"{topic}/viewpoint.bcfv", _viewpoint(issue, view, points))
     return out.getvalue()
@@ -89,9 +95,18 @@ def _failed(outcome: Outcome, checks: Mapping[str, tuple[MemberChecks, ...]]) ->
                     yield Issue(title, text, "Error", (member.element,), result.line.mark)
 
 
-def _lines_of(issue: Issue, outcome: Outcome) -> list[Line]:
-    wanted = set(issue.elements)
-    return [line for line in outcome.model.lines if wanted & set(line.elements)]
+def _places(lines: Iterable[Line]) -> dict[str, list[Point]]:
+    """Points of each element: the ends of its members, and where lines bear on it."""
+    found: dict[str, list[Point]] = {}
+    for line in lines:
+        for member in line.members:
+            ends = (line.joints[member.start].point, line.joints[member.end].point)
+            found.setdefault(member.element, []).extend(ends)
+        for joint in line.joints:
+            for element in (joint.element, *joint.elements):
+                if element:
+                    found.setdefault(element, []).append(joint.point)
+    return found
 
 
 def _points(lines: Iterable[Line]) -> list[Point]:
