@@ -405,3 +405,14 @@ def test_a_profile_whose_values_are_stated_is_read_back_as_stated(tmp_path):
     source = changed_model(tmp_path, "ifc4", state)
     _, done, _ = updated(tmp_path, source, {"J-1": "IPE 270"})
     assert member(done, "J-1").section.area == pytest.approx(45.9e-4, rel=1e-9)
+
+
+def test_the_section_that_a_member_has_already_is_no_change(tmp_path):
+    def weighed(model):
+        weight = {"GrossWeight": ("IfcQuantityWeight", 270.4)}
+        add_quantities(model, named(model, "J-1"), weight)
+
+    source = changed_model(tmp_path, "ifc4", weighed)
+    _, done, _ = updated(tmp_path, source, {"J-1": "IPE 300"})
+
+    assert done.changes == ()

@@ -24,6 +24,7 @@ from analysis_core.ifc.updating.chosen import Chooser
 from analysis_core.ifc.updating.editor import Editor
 from analysis_core.ifc.updating.shapes import Bodies, Sweep
 from analysis_core.ifc.updating.statements import Statement, Statements
+from analysis_core.ifc.updating.stock import alike
 from analysis_core.model import Section
 from analysis_core.settings import Settings
 
@@ -255,7 +256,7 @@ class _Work:
         statements = Statements(
             self._editor,
             {old.name: wish.profile} if old is not None and old.name else {},
-            (old, new) if old is not None else None,
+            _differing(old, new),
             sweep.length if sweep is not None else 0.0,
             (wish.densities or {}).get(element[0], 0.0),
         )
@@ -270,7 +271,7 @@ class _Work:
 
     def _state_type(self, type_: Any, old: Section | None, new: Section, name: str) -> None:
         names = {old.name: name} if old is not None and old.name else {}
-        statements = Statements(self._editor, names, (old, new) if old is not None else None)
+        statements = Statements(self._editor, names, _differing(old, new))
         for told in statements.names_of(type_, ("Name", "ElementType", "Description")):
             self._tell(type_, told)
         for told in statements.sets_of_type(type_):
@@ -310,7 +311,16 @@ class _Work:
                 self._tell(type_, told)
 
     def _tell(self, entity: Any, told: Statement) -> None:
+        if told.old == told.new:
+            return
         self.changes.append(Change(entity[0], entity[2] or "", told.what, told.old, told.new))
+
+
+def _differing(old: Section | None, new: Section) -> tuple[Section, Section] | None:
+    """The sections where what states the old one no longer fits."""
+    if old is None or (alike(old, new) and abs(old.depth - new.depth) <= 1e-6 * new.depth):
+        return None
+    return old, new
 
 
 def _body(element: Any) -> Any:
