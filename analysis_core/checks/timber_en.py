@@ -42,6 +42,9 @@ FIGURES: Mapping[str, Figure] = {
 }
 KDEF = {1: 0.60, 2: 0.80, 3: 2.00}
 """Table 3.2, solid timber, glued laminated timber and LVL, by service class."""
+_SIZES = {
+    "glulam": "(600 mm / h)^0.1, from 1 to 1.1", "lvl": "(300 mm / h)^s, at most 1.2",
+}  # fmt: skip
 _NOT_COVERED = "Not covered: torsion, notches, holes, vibration, fire, curved members."
 
 
@@ -139,10 +142,11 @@ def _bending(
 ) -> Check:
     w = Working()
     b, h = design.section.width, design.section.depth
+    size = w.step("k_h", "", size_factor(h, kind, f["s_lvl"]), "", "3.2(3), 3.3(3), 3.4(3)",
+                  note=_SIZES.get(kind, "(150 mm / h)^0.2, from 1 to 1.3"))  # fmt: skip
     strength = _design_strength(
-        w, "f_m", strength_of(design.material, "fmk"), f, duration, kind,
-        size_factor(h, kind, f["s_lvl"]),
-    )  # fmt: skip
+        w, "f_m", strength_of(design.material, "fmk"), f, duration, kind, size
+    )
     modulus = w.step("W", "{b} {h}² / 6", b * h**2 / 6.0, "section modulus", "",
                      b=(b, "section length"), h=(h, "section length"))  # fmt: skip
     worst: tuple[float, float, float, float, UnbracedSegment | None, float] | None = None
@@ -166,11 +170,7 @@ def _bending(
             note="where this moment acts, the compressed edge is held",
         )
     else:
-        w.step("l_ef", "", segment_.length + 2.0 * h, "length", "Table 6.1",
-               note=f"the {segment_.flange} edge not held, plus 2 h")  # fmt: skip
-        w.step("λ_rel,m", "√(f_m,k / σ_m,crit), σ_m,crit = 0.78 b² E_0,05 / (h l_ef)", slender, "",
-               "6.3.3(2), (6.30), (6.32)")  # fmt: skip
-        w.step("k_crit", "", worst[2], "", "6.3.3(4), (6.34)")
+        _slenderness_steps(w, design, segment_, slender, worst[2], kind)
     resistance = w.step("M_Rd", "{k_crit} {f} {W}", worst[2] * strength * modulus, "moment",
                         "6.1.6, 6.3.3(3)", k_crit=(worst[2], ""), f=(strength, "stress"),
                         W=(modulus, "section modulus"))  # fmt: skip
@@ -178,6 +178,31 @@ def _bending(
         "bending", "EN 1995-1-1, 6.1.6, 6.3.3", demand=worst[1], resistance=resistance,
         quantity="moment", x=worst[3], source=field.source, not_covered=_NOT_COVERED,
     )  # fmt: skip
+
+
+def _slenderness_steps(
+    w: Working,
+    design: MemberDesign,
+    segment: UnbracedSegment,
+    slender: float,
+    k_crit: float,
+    kind: str,
+) -> None:
+    b, h = design.section.width, design.section.depth
+    fmk, low = strength_of(design.material, "fmk"), _low_modulus(design, kind)
+    effective = w.step("l_ef", "{l} + 2 {h}", segment.buckling_length + 2.0 * h, "length",
+                       "Table 6.1", note=segment.words.replace("flange", "edge")
+                       + ", loads on the compressed edge", l=(segment.buckling_length, "length"),
+                       h=(h, "section length"))  # fmt: skip
+    critical = w.step("σ_m,crit", "0.78 {b}² {E_0,05} / ({h} {l_ef})", fmk / slender**2, "stress",
+                      "6.3.3(2), (6.32)", note="", b=(b, "section length"),
+                      h=(h, "section length"), l_ef=(effective, "length"),
+                      **{"E_0,05": (low, "stress")})  # fmt: skip
+    w.step("λ_rel,m", "√({f_m,k} / {σ_m,crit})", slender, "", "6.3.3(2), (6.30)", note="",
+           **{"f_m,k": (fmk, "stress"), "σ_m,crit": (critical, "stress")})  # fmt: skip
+    formula = "" if slender <= 0.75 else "1.56 - 0.75 {λ}" if slender <= 1.4 else "1 / {λ}²"
+    w.step("k_crit", formula, k_crit, "", "6.3.3(4), (6.34)",
+           note="no reduction up to 0.75" if slender <= 0.75 else "", λ=(slender, ""))  # fmt: skip
 
 
 def _slender_segments(
@@ -193,12 +218,15 @@ def _relative_slenderness(design: MemberDesign, segment: UnbracedSegment, kind: 
     For hardwood the same: 0.78 is what E/G = 16 gives.
     """
     b, h = design.section.width, design.section.depth
-    # E_0.05 over the mean modulus: EN 14080, EN 338 (hardwood 0.84: 2/3 is on the safe side).
-    ratio = 5.0 / 6.0 if kind in ("glulam", "lvl") else 2.0 / 3.0
-    low = ratio * design.material.elastic_modulus
-    effective = segment.length + 2.0 * h
-    critical = 0.78 * b**2 * low / (h * effective)
+    effective = segment.buckling_length + 2.0 * h
+    critical = 0.78 * b**2 * _low_modulus(design, kind) / (h * effective)
     return math.sqrt(strength_of(design.material, "fmk") / critical)
+
+
+def _low_modulus(design: MemberDesign, kind: str) -> float:
+    """E_0.05 from the mean modulus: EN 14080, EN 338 (hardwood 0.84: 2/3 is on the safe side)."""
+    ratio = 5.0 / 6.0 if kind in ("glulam", "lvl") else 2.0 / 3.0
+    return ratio * design.material.elastic_modulus
 
 
 def _shear(design: MemberDesign, f: Figures, field: EffectField, duration: str, kind: str) -> Check:
@@ -276,7 +304,9 @@ def _deflections(design: MemberDesign, f: Figures) -> list[Check]:
         if sag.name == "w_net_fin":
             w.step("k_def", "", creep, "", "Table 3.2",
                    note=f"service class {f['service_class']:g}")  # fmt: skip
-        w.step(sag.name, _FORMULAS[sag.name], abs(sag.value), "deflection", "2.2.3(5), (2.2)")
+        w.step(
+            _SYMBOLS[sag.name], _FORMULAS[sag.name], abs(sag.value), "deflection", "2.2.3(5), (2.2)"
+        )
         limit = w.step("limit", "{l} / {n}", sag.span / ratio, "deflection", "Table 7.2",
                        l=(sag.span, "length"), n=(ratio, ""))  # fmt: skip
         name = "deflection at once" if sag.name == "w_inst" else "deflection in the end"
@@ -290,6 +320,7 @@ def _deflections(design: MemberDesign, f: Figures) -> list[Check]:
 _BEARING_NOT_COVERED = (
     "The bearing counts as wide as the beam; a force near it may allow less (6.1.5(4))."
 )
+_SYMBOLS: Mapping[str, str] = {"w_inst": "w_inst", "w_net_fin": "w_net,fin"}
 _FORMULAS: Mapping[str, str] = {
     "w_inst": "w_G + w_Q,1 + Σ ψ_0,i w_Q,i",
     "w_net_fin": "w_G (1 + k_def) + w_Q,1 (1 + ψ_2,1 k_def) + Σ w_Q,i (ψ_0,i + ψ_2,i k_def)",

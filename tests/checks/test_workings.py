@@ -121,6 +121,12 @@ CASES = {
     "ACI": lambda: concrete_aci.check_concrete(hogging(rectangle(0.3, 0.5), C30, 8.0, 40e3), ACI),
     "ACI T": lambda: concrete_aci.check_concrete(
         hogging(tee(1.0, 0.12, 0.3, 0.6), C30, 8.0, 60e3), ACI),
+    "slender timber": lambda: timber_en.check_timber(
+        simple_span(rectangle(0.05, 0.4), C24, 7.0, 2e3), Figures(timber_en.FIGURES, {}),
+        {"U1": "medium"}),
+    "very slender glulam": lambda: timber_en.check_timber(
+        simple_span(rectangle(0.04, 0.8), C24, 9.0, 2e3), Figures(timber_en.FIGURES, {}),
+        {"U1": "medium"}, "glulam"),
     "timber": lambda: timber_en.check_timber(
         simple_span(rectangle(0.1, 0.3), C24, 5.0, 2e3), Figures(timber_en.FIGURES, {}),
         {"U1": "medium"}),
