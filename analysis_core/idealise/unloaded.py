@@ -57,7 +57,7 @@ def report_unloaded(
         log.add(
             "note" if others else "warning",
             "slab-weight-left-out",
-            f"{_slabs(len(bare))} ({listed(bare)}) without a permanent area load. Self weight is "
+            f"No permanent area load acts on {_slabs(len(bare))} ({listed(bare)}). Self weight is "
             f"that of the analysed members alone; state the weight of slabs, and of what stands "
             f"on them, in the job file (area_actions), unless actions on the beams hold it.",
             bare,
@@ -65,4 +65,4 @@ def report_unloaded(
 
 
 def _slabs(count: int) -> str:
-    return "1 slab is" if count == 1 else f"{count} slabs are"
+    return "1 slab" if count == 1 else f"{count} slabs"

@@ -24,6 +24,7 @@ from analysis_core.solving.area_reduction import reduced_by_area
 from analysis_core.solving.combining import choose, with_combinations
 from analysis_core.solving.lines import Memory, solve_lines
 from analysis_core.solving.stacks import received
+from analysis_core.solving.uplift import uplift
 
 if TYPE_CHECKING:
     from analysis_core.checking.members import MemberChecks
@@ -66,9 +67,9 @@ def _solved(
     reduced, by_area = reduced_by_area(found.model, settings, rules.rule_set)
     model = with_combinations(reduced, rules)
     results, failed = solve_lines(model, rules, settings, tell, memory)
-    findings = (*assumed, *by_area, *failed)
     if only:
         results = tuple(r for r in results if r.line.mark in only)
+    findings = (*assumed, *by_area, *failed, *uplift(results, model.names))
     return Outcome(
         file=found.file,
         schema=found.schema,
