@@ -459,8 +459,8 @@ def test_a_parser_that_stops_early_is_found_out(
     half = ifcopenshell.file(schema="IFC4")
     half.create_entity("IfcPerson")
     monkeypatch.setattr("analysis_core.ifc.source._parser", lambda *_, **__: half)
-    message = refusal(path, small())
-    assert "3 entities but only 1 can be read" in message
+    with pytest.raises(IfcReadError, match="3 entities but only 1 can be read"):
+        _ = opened(path, small()).file
 
 
 def test_what_the_parser_raises_becomes_a_sentence(
@@ -470,7 +470,8 @@ def test_what_the_parser_raises_becomes_a_sentence(
         raise RuntimeError("bad things at offset 7")
 
     monkeypatch.setattr("analysis_core.ifc.source._parser", broken)
-    assert "cannot be parsed (bad things at offset 7)" in refusal(path, small())
+    with pytest.raises(IfcReadError, match=r"cannot be parsed \(bad things at offset 7\)"):
+        _ = opened(path, small()).file
 
 
 # -- real files ------------------------------------------------------------------------------

@@ -6,6 +6,7 @@ import re
 import tempfile
 from collections import Counter
 from dataclasses import dataclass
+from functools import cached_property
 from pathlib import Path
 from typing import Any
 
@@ -14,6 +15,7 @@ import numpy as np
 
 from analysis_core.errors import IfcReadError
 from analysis_core.findings import Finding
+from analysis_core.ifc.entities import Entities
 from analysis_core.ifc.file_units import FileUnits, read_units
 from analysis_core.ifc.schema_fit import check_fit, parser_schema, public_name
 from analysis_core.ifc.step.census import Ints
@@ -24,24 +26,38 @@ _parser: Any = ifcopenshell.open  # its published overloads leave out ``lazy``
 _ROOTED = re.compile(rb"\(\s*'([0-9A-Za-z_$]{22})'\s*,")
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@dataclass(frozen=True, eq=False)
 class Source:
     """An IFC file that was read completely.
 
-    Keep the Source as long as entities of ``file`` are used: they die with it.  ``schema`` is
-    "IFC2X3", "IFC4" or "IFC4X3", ``fingerprint`` the SHA-256 of the file as it lies on the disk
-    in hexadecimal.  ``as_is`` is False where the parser was given other bytes than those (an
-    unpacked zip, a mended comment, letters rewritten as the standard asks).
+    ``entities`` are what it holds, ``schema`` is "IFC2X3", "IFC4" or "IFC4X3", ``fingerprint``
+    the SHA-256 of the file as it lies on the disk in hexadecimal.  ``as_is`` is False where what
+    is read are other bytes than those (an unpacked zip, a mended comment, letters rewritten as
+    the standard asks).
     """
 
     path: Path
     name: str
-    file: Any
+    text: StepText
+    entities: Entities
     schema: str
     fingerprint: str
     units: FileUnits
     findings: tuple[Finding, ...] = ()
     as_is: bool = True
+
+    @cached_property
+    def file(self) -> Any:
+        """The file as the parser opens it: to be changed, drawn, or read the long way.
+
+        Keep the Source as long as its entities are used: they die with it.  Raises IfcReadError
+        where it cannot be opened, or not completely.
+        """
+        data = _with_schema(self.text, self.entities.schema)
+        as_is = self.as_is and data is self.text.clean
+        file, numbers = _parse(self.path if as_is else None, data, self.text, self.name)
+        _prove(numbers, self.text, self.name)
+        return file
 
     @property
     def has_analysis_model(self) -> bool:
@@ -51,7 +67,7 @@ class Source:
         """
         from analysis_core.ifc.posting.ours import MODEL_TYPE  # what is ours is known to the writer
 
-        members = self.file.by_type("IfcStructuralCurveMember")
+        members = self.entities.by_type("IfcStructuralCurveMember")
         return any(member.ObjectType != MODEL_TYPE for member in members)
 
 
@@ -67,17 +83,23 @@ def open_model(path: str | Path) -> Source:
     text = read_step(stored.data, name)
     findings = list(stored.findings)
     parser_name = parser_schema(text.schemas, name)
-    findings += check_fit(text.shapes, parser_name, name)
+    findings += check_fit(text.census.shapes, parser_name, name)
     findings += _text_findings(text, name)
-    data = _with_schema(text, parser_name)
-    as_is = stored.as_is and data is stored.data
-    file, numbers = _parse(path if as_is else None, data, text, name)
-    _prove(numbers, text, name)
-    schema = public_name(parser_name)
-    units, unit_findings = read_units(file, name)
+    entities = Entities(text.content, text.census, parser_name)
+    units, unit_findings = read_units(entities, name)
     findings += unit_findings
-    findings += _identity_findings(file, data, name)
-    return Source(path, name, file, schema, stored.fingerprint, units, tuple(findings), as_is)
+    findings += _identity_findings(entities, text.content, name)
+    return Source(
+        path,
+        name,
+        text,
+        entities,
+        public_name(parser_name),
+        stored.fingerprint,
+        units,
+        tuple(findings),
+        stored.as_is and text.content is stored.data,
+    )
 
 
 def _text_findings(text: StepText, name: str) -> list[Finding]:
@@ -156,7 +178,7 @@ def _numbers(file: Any) -> Ints:
 def _prove(numbers: Ints, text: StepText, name: str) -> None:
     """Compare the entities read with the instances counted in the bytes."""
     read = np.sort(numbers)
-    counted = np.sort(text.ids)
+    counted = np.sort(text.census.ids)
     if read.size == counted.size and (read == counted).all():
         return
     lost = np.setdiff1d(counted, read)
@@ -168,9 +190,9 @@ def _prove(numbers: Ints, text: StepText, name: str) -> None:
     )
 
 
-def _identity_findings(file: Any, data: bytes, name: str) -> list[Finding]:
+def _identity_findings(entities: Entities, data: bytes, name: str) -> list[Finding]:
     findings = []
-    if not file.by_type("IfcProject"):
+    if not entities.by_type("IfcProject"):
         findings.append(
             Finding(
                 "warning",
@@ -183,7 +205,7 @@ def _identity_findings(file: Any, data: bytes, name: str) -> list[Finding]:
     if len(set(stated)) == len(stated):
         return findings
     # Walk the rooted entities only now: other classes may begin with a text of 22 letters too.
-    counts = Counter(entity[0] for entity in file.by_type("IfcRoot"))
+    counts = Counter(entity[0] for entity in entities.by_type("IfcRoot"))
     twice = tuple(key for key, count in counts.items() if count > 1 and isinstance(key, str))
     if twice:
         findings.append(

@@ -125,7 +125,7 @@ def material_and_profile_of(source: Any) -> dict[int, Choice]:
 
     Elements take what is associated with themselves, else with their type.
     """
-    relations = Relations(source.file)
+    relations = Relations(source.entities)
     choices: dict[int, Choice] = {}
     result: dict[int, Choice] = {}
     for key, select in relations.material_of.items():

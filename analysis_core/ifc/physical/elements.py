@@ -28,7 +28,7 @@ class Elements:
     """Look-ups for the elements of one file."""
 
     def __init__(self, source: Source, settings: Settings, notes: Notes) -> None:
-        self.file = source.file
+        self.file = source.entities
         self._notes = notes
         self._length = source.units.length
         measures = measures_of(source.units)

@@ -31,7 +31,7 @@ def end_releases(source: Source) -> dict[int, Ends]:
 
     0 where released, infinite where fixed, None where not stated.
     """
-    file = source.file
+    file = source.entities
     if not _may_state(source):
         return {}
     properties = {}
@@ -59,13 +59,7 @@ def end_releases(source: Source) -> dict[int, Ends]:
 
 def _may_state(source: Source) -> bool:
     """Whether the words occur in the file at all: hardly any does, and properties are many."""
-    if not source.as_is:
-        return True
-    try:
-        text = source.path.read_bytes()
-    except OSError:
-        return True
-    return any(word in text for word in _WORDS)
+    return any(word in source.text.content for word in _WORDS)
 
 
 def _sets(file: Any, properties: dict[int, tuple[int, float]]) -> dict[int, Ends]:

@@ -226,7 +226,7 @@ class _Reader:
         self._bearing.add(record, self._laying.placed(record), record.ifc_class)
 
     def _note_relations(self) -> None:
-        relations, file = self._elements.relations, self._source.file
+        relations, file = self._elements.relations, self._source.entities
         mine = {member.global_id for member in self._members}
         note_unreadable_relations(relations.unreadable, self._notes)
         for key, containers in relations.twice_contained.items():

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-import mmap
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 from typing import Any
@@ -37,7 +36,7 @@ def read_posted(source: Source) -> dict[str, tuple[Posted, ...]]:
         return {}
     texts: dict[str, dict[str, str]] = {}
     known: dict[int, tuple[str, str]] = {}
-    for element, properties in _sets(source.file):
+    for element, properties in _sets(source.entities):
         mine = texts.setdefault(element, {})
         for item in properties:
             key = item.id()
@@ -62,17 +61,8 @@ def known_marks(posted: Mapping[str, tuple[Posted, ...]]) -> dict[str, str]:
 
 
 def _mentioned(source: Source) -> bool:
-    """Whether our sets are named in the file; True where its bytes do not tell."""
-    if not source.as_is:
-        return True
-    try:
-        with (
-            source.path.open("rb") as file,
-            mmap.mmap(file.fileno(), 0, access=mmap.ACCESS_READ) as data,
-        ):
-            return data.find(f"'{PREFIX}".encode()) >= 0
-    except (OSError, ValueError):
-        return True
+    """Whether our sets are named in the file."""
+    return f"'{PREFIX}".encode() in source.text.content
 
 
 def _sets(file: Any) -> Iterator[tuple[str, tuple[Any, ...]]]:

@@ -8,8 +8,8 @@ one by one.
 from __future__ import annotations
 
 import re
-from collections import Counter
-from collections.abc import Iterator
+from collections import defaultdict
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -18,7 +18,7 @@ from numpy.typing import NDArray
 Ints = NDArray[np.int64]
 Bytes = NDArray[np.uint8]
 
-_CHUNK = 1 << 21
+_STRETCH = 1 << 21
 _MOST_DIGITS = 18
 _DROPPED = b"\0 \t\r\n"
 _CLASS_NAME = re.compile(rb"=(\w+)\(")
@@ -30,67 +30,110 @@ _BAD, _OPEN, _CLOSE, _COMMA, _TEXT, _HASH, _EQUALS, _END, _LONE, _DIGIT, _LETTER
 
 
 class GrammarError(Exception):
-    """A statement that is no instance; ``statement`` counts from 0 within the section."""
+    """A statement that is no instance: ``statement`` counts from 0, from position ``begin`` on."""
 
     def __init__(self, message: str, statement: int) -> None:
         super().__init__(message)
         self.statement = statement
+        self.begin = 0
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Census:
-    """Numbers given, numbers referred to (repeats kept), and counts by class and attributes."""
+    """The instances of a DATA section, in the order of the file.
+
+    Of each: its number (``ids``), where in the text it begins, white space included, and where
+    its semicolon stands (``starts``, ``ends``), its class (``kinds``, places in ``names``, which
+    are in capitals) and how many attributes it has (``attributes``).
+    """
 
     ids: Ints
-    references: Ints
-    shapes: Counter[tuple[str, int]]
+    starts: Ints
+    ends: Ints
+    kinds: Ints
+    attributes: Ints
+    names: tuple[str, ...]
+
+    @property
+    def shapes(self) -> dict[tuple[str, int], int]:
+        """How many instances there are of each class and number of attributes."""
+        width = int(self.attributes.max(initial=0)) + 1
+        values, counts = np.unique(self.kinds * width + self.attributes, return_counts=True)
+        pairs = [divmod(value, width) for value in values.tolist()]
+        return {
+            (self.names[kind], attributes): count
+            for (kind, attributes), count in zip(pairs, counts.tolist(), strict=True)
+        }
 
 
-def take_census(blanked: bytes) -> Census:
-    """Return the census of the statements of a DATA section, blanked.
+def take_census(blanked: bytes, sections: Sequence[tuple[int, int]]) -> tuple[Census, Ints]:
+    """Return the census of the statements in DATA sections (from, to) of a text, blanked.
 
-    Raises GrammarError at a statement that is no whole instance.
+    With it go the numbers that are referred to, repeats kept.  Raises GrammarError at a statement
+    that is no whole instance.
     """
-    ids: list[Ints] = [np.zeros(0, np.int64)]
-    references: list[Ints] = [np.zeros(0, np.int64)]
-    shapes: Counter[tuple[bytes, int]] = Counter()
-    done = 0
-    for chunk in _chunks(blanked.translate(None, _DROPPED)):
-        marks = np.frombuffer(chunk, np.uint8)
-        kinds = _KIND[marks]
-        counts = _attribute_counts(chunk, kinds, done)
-        names = _CLASS_NAME.findall(chunk)
-        if len(names) != counts.size:
-            raise _nameless(chunk, done)
-        hashes = np.flatnonzero(kinds == _HASH)
-        defines = np.zeros(hashes.size, bool)
-        defines[:1] = hashes[:1] == 0
-        defines |= kinds[hashes - 1] == _END
-        numbers = _numbers(marks, hashes + 1, done)
-        ids.append(numbers[defines])
-        references.append(numbers[~defines])
-        shapes.update(zip(names, counts.tolist(), strict=True))
-        done += counts.size
-    named: Counter[tuple[str, int]] = Counter()
-    for (name, attributes), count in shapes.items():
-        named[name.decode("ascii").upper(), attributes] += count
-    return Census(np.concatenate(ids), np.concatenate(references), named)
+    parts: list[tuple[Ints, ...]] = [(np.zeros(0, np.int64),) * 6]
+    kind_of: defaultdict[bytes, int] = defaultdict()
+    kind_of.default_factory = kind_of.__len__
+    for first, stretch in _stretches(blanked, sections):
+        text = stretch.translate(None, _DROPPED)
+        if not text:
+            continue
+        try:
+            parts.append(_counted(text, kind_of) + _places(stretch, first))
+        except GrammarError as error:
+            error.begin = first
+            raise
+    ids, references, kinds, attributes, starts, ends = map(np.concatenate, zip(*parts, strict=True))
+    names, same = _in_capitals(kind_of)
+    return Census(ids, starts, ends, same[kinds], attributes, names), references
 
 
-def _chunks(text: bytes) -> Iterator[bytes]:
-    """Yield runs of whole statements, so that the working arrays stay small."""
-    start = 0
-    while start < len(text):
-        stop = start + _CHUNK
-        if stop < len(text):
-            stop = text.rfind(b";", start, stop) + 1 or text.find(b";", stop) + 1
-        stop = stop if start < stop <= len(text) else len(text)
-        yield text[start:stop]
-        start = stop
+def _stretches(text: bytes, sections: Sequence[tuple[int, int]]) -> Iterator[tuple[int, bytes]]:
+    """Yield runs of whole statements and where they begin; the working arrays stay small."""
+    for start, stop in sections:
+        while start < stop:
+            end = start + _STRETCH
+            if end < stop:
+                end = text.rfind(b";", start, end) + 1 or text.find(b";", end, stop) + 1
+            end = end if start < end <= stop else stop
+            yield start, text[start:end]
+            start = end
 
 
-def _attribute_counts(chunk: bytes, kinds: Bytes, done: int) -> Ints:
-    """Return the number of attributes of each statement of a chunk, and check its grammar."""
+def _counted(text: bytes, kind_of: defaultdict[bytes, int]) -> tuple[Ints, Ints, Ints, Ints]:
+    """Return numbers given, numbers referred to, kinds and attributes of statements."""
+    marks = np.frombuffer(text, np.uint8)
+    kinds = _KIND[marks]
+    counts = _attribute_counts(text, kinds)
+    names = _CLASS_NAME.findall(text)
+    if len(names) != counts.size:
+        raise _nameless(text)
+    hashes = np.flatnonzero(kinds == _HASH)
+    defines = kinds[hashes - 1] == _END
+    defines[:1] = True
+    numbers = _numbers(marks, hashes + 1)
+    kind = np.fromiter(map(kind_of.__getitem__, names), np.int64, len(names))
+    return numbers[defines], numbers[~defines], kind, counts
+
+
+def _places(stretch: bytes, first: int) -> tuple[Ints, Ints]:
+    """Return where the statements of a stretch of the text begin and end."""
+    ends = np.flatnonzero(np.frombuffer(stretch, np.uint8) == ord(";")) + first
+    starts = np.empty_like(ends)
+    starts[:1], starts[1:] = first, ends[:-1] + 1
+    return starts, ends
+
+
+def _in_capitals(kind_of: dict[bytes, int]) -> tuple[tuple[str, ...], Ints]:
+    """Return the names in capitals, and the place there of each name as it was written."""
+    places: dict[str, int] = {}
+    same = [places.setdefault(name.decode("ascii").upper(), len(places)) for name in kind_of]
+    return tuple(places), np.array(same, np.int64)
+
+
+def _attribute_counts(text: bytes, kinds: Bytes) -> Ints:
+    """Return the number of attributes of each statement, and check the grammar."""
     wrong = _MUST_NOT_FOLLOW[(kinds[:-1] << 4) | kinds[1:]]
     at = np.flatnonzero((kinds >= _OPEN) & (kinds <= _COMMA) | (kinds == _EQUALS) | (kinds == _END))
     kind = kinds[at]
@@ -103,15 +146,15 @@ def _attribute_counts(chunk: bytes, kinds: Bytes, done: int) -> Ints:
     first = min(
         _first(np.flatnonzero(wrong) + 1),
         _first(at[bad]),
-        0 if kinds[0] != _HASH else len(chunk),
+        0 if kinds[0] != _HASH else len(text),
     )
-    if first < len(chunk):
-        broken = chunk.count(b";", 0, first)
-        raise GrammarError(_what_is_wrong(chunk, first), done + broken)
+    if first < len(text):
+        broken = text.count(b";", 0, first)
+        raise GrammarError(_what_is_wrong(text, first), broken)
     if kinds[-1] != _END or count == 0:
-        raise GrammarError("it does not end", done + count)
+        raise GrammarError("it does not end", count)
     if (equals[:count] != 1).any():
-        raise GrammarError("it has no name", done + int(np.flatnonzero(equals[:count] != 1)[0]))
+        raise GrammarError("it has no name", int(np.flatnonzero(equals[:count] != 1)[0]))
     commas = np.bincount(statement[(kind == _COMMA) & (depth == 1)], minlength=count)[:count]
     ends = at[kind == _END]
     empty = (kinds[ends - 1] == _CLOSE) & (kinds[ends - 2] == _OPEN) & (commas == 0)
@@ -119,24 +162,24 @@ def _attribute_counts(chunk: bytes, kinds: Bytes, done: int) -> Ints:
     return attributes
 
 
-def _nameless(chunk: bytes, done: int) -> GrammarError:
+def _nameless(text: bytes) -> GrammarError:
     """Return the error for the first statement whose class name is no plain word."""
-    for number, statement in enumerate(chunk.split(b";")):
+    for number, statement in enumerate(text.split(b";")):
         if len(_CLASS_NAME.findall(statement)) != 1:
-            return GrammarError("its class is not a plain name", done + number)
-    return GrammarError("a class is not a plain name", done)
+            return GrammarError("its class is not a plain name", number)
+    return GrammarError("a class is not a plain name", 0)
 
 
 def _first(positions: Ints) -> int:
     return int(positions[0]) if positions.size else np.iinfo(np.int64).max
 
 
-def _what_is_wrong(chunk: bytes, first: int) -> str:
-    around = chunk[max(0, first - 12) : first + 6].decode("ascii", "replace")
+def _what_is_wrong(text: bytes, first: int) -> str:
+    around = text[max(0, first - 12) : first + 6].decode("ascii", "replace")
     return f"near {around!r}"
 
 
-def _numbers(marks: Bytes, starts: Ints, done: int) -> Ints:
+def _numbers(marks: Bytes, starts: Ints) -> Ints:
     """Return the whole numbers whose first digits stand at ``starts``."""
     padded = np.concatenate([marks, np.zeros(_MOST_DIGITS + 2, np.uint8)])
     values = np.zeros(starts.size, np.int64)
@@ -148,7 +191,7 @@ def _numbers(marks: Bytes, starts: Ints, done: int) -> Ints:
             return values
         values = np.where(alive, values * 10 + digits, values)
     broken = int(np.count_nonzero(marks[: int(starts[np.flatnonzero(alive)[0]])] == ord(";")))
-    raise GrammarError("a number has too many digits", done + broken)
+    raise GrammarError("a number has too many digits", broken)
 
 
 def _kinds() -> Bytes:

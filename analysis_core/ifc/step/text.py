@@ -8,7 +8,6 @@ open text, an unclosed comment, a statement that is no instance, a reference to 
 from __future__ import annotations
 
 import re
-from collections import Counter
 from dataclasses import dataclass
 from itertools import islice
 
@@ -31,16 +30,16 @@ class StepText:
     """The census of a STEP file.
 
     ``clean`` is the text to be parsed: the original, or a mended copy where ``repaired`` says
-    what was mended.  ``schemas`` are the names in its FILE_SCHEMA.  ``ids`` are the instance
-    numbers in file order, ``shapes`` counts instances by (class name in capitals, number of
-    attributes), ``missing`` are numbers that are referenced but given to no instance.
+    what was mended.  ``content`` is that text with spaces in place of comments.  ``schemas`` are
+    the names in its FILE_SCHEMA.  ``missing`` are numbers that are referenced but given to no
+    instance.
     """
 
     clean: bytes
+    content: bytes
     header: bytes
     schemas: tuple[str, ...]
-    ids: Ints
-    shapes: Counter[tuple[str, int]]
+    census: Census
     missing: Ints
     repaired: tuple[str, ...] = ()
     data_sections: int = 1
@@ -48,7 +47,7 @@ class StepText:
     @property
     def count(self) -> int:
         """Number of instances."""
-        return int(self.ids.size)
+        return int(self.census.ids.size)
 
 
 def read_step(data: bytes, name: str) -> StepText:
@@ -60,17 +59,17 @@ def read_step(data: bytes, name: str) -> StepText:
         raise IfcReadError(_not_step(data, name))
     blanked = blank(data)
     header_end, sections = _sections(data, blanked, name)
-    census = _joined(data, blanked, sections, name)
-    ids = census.ids
-    _check_numbers(ids, name)
-    missing = _missing(ids, census.references)
+    census, references = _census(data, blanked, sections, name)
+    _check_numbers(census.ids, name)
+    missing = _missing(census.ids, references)
     _check_hidden(data, blanked.comments, missing, name)
+    clean = _spaced(data, blanked.stray)
     return StepText(
-        _mended(data, blanked.stray),
+        clean,
+        _spaced(clean, blanked.comments),
         data[:header_end],
         _schemas(data[:header_end], blanked.text[:header_end]),
-        ids,
-        census.shapes,
+        census,
         missing,
         tuple(f"line {line_of(data, start)}" for start, _ in blanked.stray),
         len(sections),
@@ -132,7 +131,7 @@ def _check_last_statement(data: bytes, blanked: Blanked, start: int, name: str) 
     """Say where a section goes wrong whose end no semicolon comes before."""
     end = re.compile(rb"\bENDSEC\s*;").search(blanked.text, start)
     if end is not None:
-        _joined(data, blanked, [(start, end.start())], name)
+        _census(data, blanked, [(start, end.start())], name)
 
 
 def _broken_off(data: bytes, blanked: Blanked, expected: tuple[bytes, ...], name: str) -> str:
@@ -164,29 +163,17 @@ def _check_tail(data: bytes, blanked: Blanked, end: int, name: str) -> None:
         )
 
 
-def _joined(data: bytes, blanked: Blanked, sections: list[Span], name: str) -> Census:
-    parts = []
-    for start, stop in sections:
-        try:
-            parts.append(take_census(blanked.text[start:stop]))
-        except GrammarError as error:
-            raise IfcReadError(_bad_statement(data, blanked, start, error, name)) from None
-    shapes: Counter[tuple[str, int]] = Counter()
-    for part in parts:
-        shapes.update(part.shapes)
-    return Census(
-        np.concatenate([part.ids for part in parts]),
-        np.concatenate([part.references for part in parts]),
-        shapes,
-    )
+def _census(data: bytes, blanked: Blanked, sections: list[Span], name: str) -> tuple[Census, Ints]:
+    try:
+        return take_census(blanked.text, sections)
+    except GrammarError as error:
+        raise IfcReadError(_bad_statement(data, blanked, error, name)) from None
 
 
-def _bad_statement(
-    data: bytes, blanked: Blanked, start: int, error: GrammarError, name: str
-) -> str:
-    begin = start
+def _bad_statement(data: bytes, blanked: Blanked, error: GrammarError, name: str) -> str:
+    begin = error.begin
     if error.statement:
-        ends = re.compile(rb";").finditer(blanked.text, start)
+        ends = re.compile(rb";").finditer(blanked.text, begin)
         begin = next(islice(ends, error.statement - 1, None)).end()
     begin += len(blanked.text[begin : begin + 10_000]) - len(
         blanked.text[begin : begin + 10_000].lstrip()
@@ -244,11 +231,12 @@ def _check_hidden(data: bytes, comments: tuple[Span, ...], missing: Ints, name: 
             )
 
 
-def _mended(data: bytes, stray: tuple[Span, ...]) -> bytes:
-    if not stray:
+def _spaced(data: bytes, spans: tuple[Span, ...]) -> bytes:
+    """Return the text with spaces in some places."""
+    if not spans:
         return data
     text = bytearray(data)
-    for start, stop in stray:
+    for start, stop in spans:
         text[start:stop] = b" " * (stop - start)
     return bytes(text)
 
