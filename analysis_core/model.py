@@ -28,7 +28,7 @@ Everything is checked once, when a ``Line`` is built; the solver trusts its inpu
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -382,8 +382,9 @@ class Line:
         _check_numbering(self)
         for member in self.members:
             _check_member(self, member)
+        lengths = [member.length for member in self.members]
         for action in self.actions:
-            _check_action(self, action)
+            _check_action(self, action, lengths)
 
     def direction(self, member: Member) -> tuple[float, float]:
         """Return the unit vector (cos a, sin a) from the member's start to its end."""
@@ -453,23 +454,29 @@ def _check_numbering(line: Line) -> None:
 
 
 def _check_member(line: Line, member: Member) -> None:
-    where = f"Line {line.mark}, member {member.id} ({member.element or 'no element'})"
+    trouble = _trouble_of(line, member)
+    if trouble:
+        name = member.element or "no element"
+        raise ModelError(f"Line {line.mark}, member {member.id} ({name}) {trouble}")
+
+
+def _trouble_of(line: Line, member: Member) -> str:
+    """What keeps a member from being analysed, as the rest of a sentence; "" where nothing does."""
     for end in (member.start, member.end):
         if not 0 <= end < len(line.joints):
-            raise ModelError(f"{where} refers to joint {end}; the line has {len(line.joints)}.")
+            return f"refers to joint {end}; the line has {len(line.joints)}."
     a, b = line.joints[member.start], line.joints[member.end]
     distance = math.hypot(b.x - a.x, b.z - a.z)
     if not distance > 0.0:
-        raise ModelError(f"{where} has no length: both its joints are at x = {a.x:.3f} m.")
+        return f"has no length: both its joints are at x = {a.x:.3f} m."
     if not distance <= _LONGEST_MEMBER:
-        raise ModelError(
-            f"{where} is {distance:.3g} m long; at most {_LONGEST_MEMBER:.0e} m are permitted. "
+        return (
+            f"is {distance:.3g} m long; at most {_LONGEST_MEMBER:.0e} m are permitted. "
             f"Check its geometry and the length unit of the file."
         )
     if abs(distance - member.length) > 1e-6 * distance:
-        raise ModelError(
-            f"{where} is {member.length:.6f} m long by its pieces and {distance:.6f} m between "
-            f"its joints."
+        return (
+            f"is {member.length:.6f} m long by its pieces and {distance:.6f} m between its joints."
         )
     for piece in member.pieces:
         looks = 1 if len(piece.flexural) == 1 else 9
@@ -477,57 +484,64 @@ def _check_member(line: Line, member: Member) -> None:
         low, high = _RIGIDITIES
         wrong = [v for v in values if not low <= v <= high]
         if wrong:
-            raise ModelError(
-                f"{where} has flexural rigidity {wrong[0]:.3g} N·m²; it must be positive, from "
+            return (
+                f"has flexural rigidity {wrong[0]:.3g} N·m²; it must be positive, from "
                 f"{low:.0e} to {high:.0e}. Check its section and its modulus of elasticity."
             )
     for spring in (member.start_spring, member.end_spring):
         if not spring >= 0.0:
-            raise ModelError(f"{where} has an end spring of {spring}; it must not be negative.")
+            return f"has an end spring of {spring}; it must not be negative."
+    return ""
 
 
-def _check_action(line: Line, action: Action) -> None:
-    where = f"Line {line.mark}, case '{action.case}'"
-    largest = max(map(abs, _values(action)), default=0.0)
-    if not largest <= _LARGEST_ACTION:
-        raise ModelError(
-            f"{where}: an action has the value {largest:.3g} (SI); it must be a number of at most "
+def _check_action(line: Line, action: Action, lengths: Sequence[float]) -> None:
+    trouble = _trouble_with(line, action, lengths)
+    if trouble:
+        raise ModelError(f"Line {line.mark}, case '{action.case}': an action {trouble}")
+
+
+def _trouble_with(line: Line, action: Action, lengths: Sequence[float]) -> str:
+    """What is wrong with an action, as ``_trouble_of``; ``lengths`` are those of the members."""
+    values = _values(action)
+    if not all(abs(value) <= _LARGEST_ACTION for value in values):
+        largest = max(math.inf if math.isnan(value) else abs(value) for value in values)
+        return (
+            f"has the value {largest:.3g} (SI); it must be a number of at most "
             f"{_LARGEST_ACTION:.0e} ({action.source or 'no source'}). Correct it, or check the "
             f"units of the file."
         )
     if isinstance(action, JointForce | JointMovement):
-        if not 0 <= action.joint < len(line.joints):
-            raise ModelError(
-                f"{where}: an action refers to joint {action.joint}, which is missing."
-            )
-        return
-    if not 0 <= action.member < len(line.members):
-        raise ModelError(f"{where}: an action refers to member {action.member}; there is none.")
-    length = line.members[action.member].length
+        joint = action.joint
+        missing = not 0 <= joint < len(line.joints)
+        return f"refers to joint {joint}, which is missing." if missing else ""
+    if not 0 <= action.member < len(lengths):
+        return f"refers to member {action.member}; there is none."
+    length = lengths[action.member]
     slack = 1e-9 * length
     if isinstance(action, PointForce | PointMoment):
         low = high = action.position
     else:
         low, high = action.start, action.end
     if not (-slack <= low <= high <= length + slack):
-        raise ModelError(
-            f"{where}: an action from {low:.3f} m to {high:.3f} m lies outside member "
+        return (
+            f"from {low:.3f} m to {high:.3f} m lies outside member "
             f"{action.member}, which is {length:.3f} m long ({action.source or 'no source'})."
         )
+    return ""
 
 
 def _values(action: Action) -> tuple[float, ...]:
-    """Everything in an action that says how large it is; NaN counts as infinite."""
+    """Everything in an action that says how large it is."""
     match action:
         case DistributedForce():
-            found = (*action.transverse, *action.axial)
+            return (*action.transverse, *action.axial)
         case PointForce():
-            found = (action.transverse, action.axial)
+            return (action.transverse, action.axial)
         case PointMoment():
-            found = (action.moment,)
+            return (action.moment,)
         case ImposedCurvature():
-            found = (action.curvature,)
-        case JointForce() | JointMovement():
-            found = (action.horizontal, action.vertical)
-            found += (action.moment if isinstance(action, JointForce) else action.rotation,)
-    return tuple(math.inf if math.isnan(value) else value for value in found)
+            return (action.curvature,)
+        case JointForce():
+            return (action.horizontal, action.vertical, action.moment)
+        case JointMovement():
+            return (action.horizontal, action.vertical, action.rotation)

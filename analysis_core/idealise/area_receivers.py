@@ -97,7 +97,7 @@ def _of_wall(carrier: Carrier) -> Receiver:
     size = math.dist(a, b)
     direction = ((b[0] - a[0]) / size, (b[1] - a[1]) / size)
     ray = Ray(centre(corners), direction)
-    low, high, right, left = extent(corners, ray)
+    low, high, right, left = extent([ray.local(corner) for corner in corners])
     middle = (right + left) / 2.0
     shift = (-direction[1] * middle, direction[0] * middle)
     ends = [ray.at(low), ray.at(high)]
@@ -159,6 +159,6 @@ def _one_line(a: tuple[Spot, Spot], b: tuple[Spot, Spot]) -> bool:
     """Whether two segments lie beside each other over more than a touch."""
     size = math.dist(*a)
     ray = Ray(a[0], ((a[1][0] - a[0][0]) / size, (a[1][1] - a[0][1]) / size))
-    low, high, right, left = extent(b, ray)
+    low, high, right, left = extent([ray.local(corner) for corner in b])
     overlap = min(high, size) - max(low, 0.0)
     return max(abs(right), abs(left)) <= _SAME_LINE and overlap > _SAME_LINE

@@ -28,7 +28,7 @@ def find_bearings(
     known.sort(key=lambda carrier: carrier.global_id)
     found: dict[str, list[Bearing]] = {beam.id: [] for beam in beams}
     boxes = boxes_of_beams(beams, tolerances.bearing)
-    for i, j in _pairs(boxes, boxes_of_carriers(known)):
+    for i, j in _pairs_with_carriers(beams, boxes, known):
         found[beams[i].id].extend(bearings_on_carrier(beams[i], known[j], tolerances))
     for i, j in _crossing_pairs(beams, boxes, tolerances):
         found[beams[i].id].extend(bearings_on_beam(beams[i], beams[j], tolerances))
@@ -37,9 +37,15 @@ def find_bearings(
     return found
 
 
-def _pairs(first: Floats, second: Floats) -> Iterator[tuple[int, int]]:
-    i, j = overlapping(first, second)
-    return zip(i.tolist(), j.tolist(), strict=True)
+def _pairs_with_carriers(
+    beams: list[Beam], boxes: Floats, carriers: Sequence[Carrier]
+) -> Iterator[tuple[int, int]]:
+    """Pairs of a beam and a carrier near it that does not stand on the beam, or higher."""
+    around = boxes_of_carriers(carriers)
+    i, j = overlapping(boxes, around)
+    highest = np.array([max(beam.level(0.0), beam.level(beam.run)) for beam in beams])
+    below = around[j, 2] < highest[i]
+    return zip(i[below].tolist(), j[below].tolist(), strict=True)
 
 
 def boxes_of_beams(beams: Sequence[Beam], reach: float) -> Floats:
@@ -51,11 +57,14 @@ def boxes_of_beams(beams: Sequence[Beam], reach: float) -> Floats:
 
 def boxes_of_carriers(carriers: Sequence[Carrier]) -> Floats:
     """Return the bounding boxes of carriers that have an outline, (n, 6)."""
-    rows = []
-    for carrier in carriers:
-        xs, ys = zip(*carrier.corners, strict=True)
-        rows.append((min(xs), min(ys), carrier.bottom, max(xs), max(ys), carrier.top))
-    return np.array(rows, float).reshape(-1, 6)
+    if not carriers:
+        return np.empty((0, 6))
+    corners = np.array([corner for carrier in carriers for corner in carrier.corners])
+    counts = np.array([len(carrier.corners) for carrier in carriers])
+    first = np.cumsum(counts) - counts
+    low, high = (bound.reduceat(corners, first) for bound in (np.minimum, np.maximum))
+    levels = np.array([(carrier.bottom, carrier.top) for carrier in carriers])
+    return np.hstack([low, levels[:, :1], high, levels[:, 1:]])
 
 
 def _crossing_pairs(

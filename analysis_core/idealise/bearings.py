@@ -8,6 +8,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 from dataclasses import dataclass
+from functools import cache
 from typing import Literal
 
 from analysis_core.building import AxisMember, Carrier
@@ -69,11 +70,13 @@ class Bearing:
 
 def kind_of(carrier: Carrier | AxisMember) -> Kind | None:
     """Return the kind of bearing that a class of element makes, None where it makes none."""
-    name = carrier.ifc_class.casefold()
-    for word, kind in _CLASSES:
-        if word in name:
-            return kind
-    return None
+    return _kind_of_class(carrier.ifc_class)
+
+
+@cache
+def _kind_of_class(ifc_class: str) -> Kind | None:
+    name = ifc_class.casefold()
+    return next((kind for word, kind in _CLASSES if word in name), None)
 
 
 _CLASSES: tuple[tuple[str, Kind], ...] = (
@@ -95,13 +98,14 @@ def bearings_on_carrier(beam: Beam, carrier: Carrier, tolerances: Tolerances) ->
     highest = max(beam.level(0.0), beam.level(beam.run))
     if kind is None or carrier.bottom >= highest:  # it stands on the beam, or higher
         return
-    near, far, right, left = extent(carrier.corners, beam.ray)
+    local = [beam.ray.local(corner) for corner in carrier.corners]
+    near, far, right, left = extent(local)
     reach = tolerances.bearing
     if near > beam.run + reach or far < -reach:
         return
     sideways = beam.half_width + tolerances.join
     touching = right <= sideways and left >= -sideways
-    faces = crossing(carrier.corners, beam.ray) or (near, far)
+    faces = crossing(local) or (near, far)
     if not touching:
         yield from _beside_end(beam, carrier, kind, faces, tolerances)
         return

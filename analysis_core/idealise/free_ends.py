@@ -65,6 +65,8 @@ def _overhang(draft: Draft, joint: DraftJoint) -> tuple[float | None, float | No
 
 
 def _nearest(physical: PhysicalScheme, ends: list[tuple[Draft, DraftJoint]]) -> list[str]:
+    if not ends:
+        return []
     carriers = [c for c in physical.carriers if kind_of(c) not in (None, "slab")]
     points = np.array([draft.plane.world(j.x, j.z) for draft, j in ends]).reshape(-1, 3)
     best: dict[int, tuple[float, str]] = {}

@@ -30,8 +30,8 @@ def overlapping(first: Floats, second: Floats) -> tuple[Indices, Indices]:
             j = np.concatenate([j, same if swap else all_of])
     a, b = first[i], second[j]
     touch = ((a[:, :3] <= b[:, 3:]) & (b[:, :3] <= a[:, 3:])).all(axis=1)
-    both = np.unique(np.stack([i[touch], j[touch]], axis=1), axis=0)
-    return both[:, 0], both[:, 1]
+    both = np.unique(i[touch] * len(second) + j[touch])
+    return both // len(second), both % len(second)
 
 
 def _range(boxes: Floats, origin: Floats) -> tuple[Indices, Indices]:

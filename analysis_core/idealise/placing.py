@@ -128,9 +128,13 @@ class Placer:
         ``forces`` hold at the member's start and end.
         """
         seats = self.seats(draft, member)
-        low, high = seats[0].low, seats[-1].high
+        stations = seats[0].low, seats[-1].high
+        first = last = forces[0]
         for seat in seats:
-            self._lay(seat, case, (low, high), forces, (seat.low, seat.high), source)
+            if forces[0] != forces[1]:
+                first = between(stations, forces, seat.low)
+                last = between(stations, forces, seat.high)
+            self._press(seat, case, first, last, (0.0, seat.length), source)
 
     def point(
         self, draft: Draft, member: str, case: str, station: float, force: Pair, source: str
@@ -217,12 +221,26 @@ class Placer:
         source: str,
     ) -> None:
         first, last = (between(stations, forces, s) for s in part)
-        positions = [seat.position(s) for s in part]
-        if positions[0] > positions[1]:
-            positions.reverse()
+        low, high = sorted((seat.position(part[0]), seat.position(part[1])))
+        self._press(seat, case, first, last, (low, high), source)
+
+    def _press(
+        self,
+        seat: Seat,
+        case: str,
+        first: Pair,
+        last: Pair,
+        ends: tuple[float, float],
+        source: str,
+    ) -> None:
+        """Put a force per metre of member between two positions on a bar.
+
+        ``first`` holds at the one that lies nearer to the member's start.
+        """
+        if seat.bar.station_start > seat.bar.station_end:
             first, last = last, first
-        a, b = seat.local(first), seat.local(last)
-        ends = positions[0], positions[1]
+        a = seat.local(first)
+        b = seat.local(last) if last != first else a
         run = ends[1] - ends[0]
         transverse = _linear(a[0] * seat.stretch, b[0] * seat.stretch, run)
         axial = _linear(a[1] * seat.stretch, b[1] * seat.stretch, run)

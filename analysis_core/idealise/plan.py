@@ -30,11 +30,13 @@ class Ray:
         )
 
 
-def crossing(corners: Sequence[Spot], ray: Ray) -> tuple[float, float] | None:
-    """Return where a line enters and leaves a convex outline, None where it misses it."""
-    local = [ray.local(corner) for corner in corners]
+def crossing(local: Sequence[Spot]) -> tuple[float, float] | None:
+    """Return where a line enters and leaves a convex outline, None where it misses it.
+
+    ``local`` are the corners as ``Ray.local`` gives them.
+    """
     hits = []
-    for (a, side_a), (b, side_b) in zip(local, local[1:] + local[:1], strict=True):
+    for (a, side_a), (b, side_b) in zip(local, [*local[1:], local[0]], strict=True):
         if side_a == 0.0:
             hits.append(a)
         if side_a * side_b < 0.0:
@@ -42,9 +44,11 @@ def crossing(corners: Sequence[Spot], ray: Ray) -> tuple[float, float] | None:
     return (min(hits), max(hits)) if hits else None
 
 
-def extent(corners: Sequence[Spot], ray: Ray) -> tuple[float, float, float, float]:
-    """Return the lowest and highest place along the line, then sideways, of an outline."""
-    local = [ray.local(corner) for corner in corners]
+def extent(local: Sequence[Spot]) -> tuple[float, float, float, float]:
+    """Return the lowest and highest place along a line, then sideways, of an outline.
+
+    ``local`` are its corners as ``Ray.local`` gives them.
+    """
     along = [a for a, _ in local]
     side = [s for _, s in local]
     return min(along), max(along), min(side), max(side)

@@ -70,14 +70,15 @@ def matches(
         own = getattr(element, "element", None)  # the physical element that it stands for
         if own is None or own not in selector.global_ids:
             return False
-    material = getattr(element, "material", None)
-    checks = (
-        (selector.name, element.name),
-        (selector.type_name, getattr(element, "type_name", "")),
-        (selector.material, material.name if material else ""),
-        (selector.storey, getattr(element, "storey", None) or storey),
-    )
-    if not all(_fits(pattern, text) for pattern, text in checks):
+    if not _fits(selector.name, element.name):
+        return False
+    if selector.type_name and not _fits(selector.type_name, getattr(element, "type_name", "")):
+        return False
+    if selector.material:
+        material = getattr(element, "material", None)
+        if not _fits(selector.material, material.name if material else ""):
+            return False
+    if selector.storey and not _fits(selector.storey, getattr(element, "storey", None) or storey):
         return False
     if selector.ifc_class and not _fits_class(selector.ifc_class, element):
         return False

@@ -2,6 +2,10 @@
 
 from __future__ import annotations
 
+from collections.abc import Collection, Mapping
+
+import numpy as np
+
 from analysis_core.building import Carrier
 from analysis_core.idealise.beams import Beam
 from analysis_core.idealise.bearing_search import boxes_of_beams, boxes_of_carriers
@@ -38,14 +42,12 @@ def let_columns_stand(
     beams = {beam.id: beam for chain in physical.chains for beam in chain.beams}
     feet = _feet(columns, below, beams, tolerances)
     home = {beam.id: i for i, chain in enumerate(physical.chains) for beam in chain.beams}
+    lowest = _lowest(columns, below)
     for index, draft in enumerate(drafts):
         for joint in draft.joints:
             if joint.element not in columns or joint.vertical != RIGID or joint.settled:
                 continue
-            column, seen = columns[joint.element], {joint.element}
-            while (lower := below.get(column.global_id)) in columns and lower not in seen:
-                seen.add(str(lower))
-                column = columns[str(lower)]
+            column = columns[lowest[joint.element]]
             found = feet.get(column.global_id)
             if found is None or home[found[0]] == index:
                 continue
@@ -94,18 +96,34 @@ def _report_yielding(
     )
 
 
+def _lowest(columns: Collection[str], below: Mapping[str, str]) -> dict[str, str]:
+    """Return the lowest of the columns under each, by GlobalId; each is followed down once."""
+    lowest: dict[str, str] = {}
+    for column in columns:
+        path = [column]
+        while (lower := below.get(path[-1])) in columns and lower not in path:
+            path.append(str(lower))
+            if lower in lowest:
+                break
+        foot = lowest.get(path[-1], path[-1])
+        lowest |= dict.fromkeys(path, foot)
+    return lowest
+
+
 def _below(physical: PhysicalScheme, columns: list[Carrier]) -> dict[str, str]:
     """Return what stands directly under each column, by GlobalId."""
     holders = [c for c in physical.carriers if kind_of(c) in ("column", "wall", "footing")]
-    i, j = overlapping(_feet_boxes(columns, _BETWEEN), boxes_of_carriers(holders))
+    around = boxes_of_carriers(holders)
+    i, j = overlapping(_feet_boxes(columns, _BETWEEN), around)
+    bottoms = np.array([column.bottom for column in columns])
+    under = (around[j, 2] < bottoms[i] - 0.05) & (bottoms[i] - around[j, 5] <= _BETWEEN)
+    middles = [centre(column.corners) for column in columns]
     result: dict[str, tuple[float, str]] = {}
-    for a, b in zip(i.tolist(), j.tolist(), strict=True):
+    for a, b in zip(i[under].tolist(), j[under].tolist(), strict=True):
         column, holder = columns[a], holders[b]
+        if gap_to(holder.corners, middles[a]) > 0.05:
+            continue
         drop = column.bottom - holder.top
-        if holder is column or holder.bottom >= column.bottom - 0.05 or drop > _BETWEEN:
-            continue
-        if gap_to(holder.corners, centre(column.corners)) > 0.05:
-            continue
         found = result.get(column.global_id)
         if found is None or (abs(drop), holder.global_id) < found:
             result[column.global_id] = (abs(drop), holder.global_id)

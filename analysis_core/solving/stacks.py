@@ -56,16 +56,17 @@ def standing_elements(building: Building) -> tuple[Standing, ...]:
     for carrier in building.carriers:
         if carrier.ifc_class.startswith(_STANDING):
             carriers.setdefault(carrier.global_id, []).append(carrier)
-    extents = np.array([_extent(pieces) for pieces in carriers.values()]).reshape(-1, 6)
-    below = _below(list(carriers), extents)
+    if not carriers:
+        return ()
+    boxes = _boxes(list(carriers.values()))
+    below = _below(list(carriers), boxes)
+    levels = boxes[:, [2, 5]].tolist()
     out = [
         Standing(
-            key, pieces[0].name, pieces[0].ifc_class, pieces[0].storey,
-            min(piece.bottom for piece in pieces), max(piece.top for piece in pieces),
-            below.get(key),
+            key, pieces[0].name, pieces[0].ifc_class, pieces[0].storey, bottom, top, below.get(key)
         )
-        for key, pieces in carriers.items()
-    ]  # fmt: skip
+        for (key, pieces), (bottom, top) in zip(carriers.items(), levels, strict=True)
+    ]
     return tuple(sorted(out, key=lambda s: (-s.bottom, s.name, s.global_id)))
 
 
@@ -106,22 +107,27 @@ def received(
     return tuple(out)
 
 
-def _extent(pieces: Sequence[Carrier]) -> tuple[float, ...]:
-    """The box round an element: lowest x, y, z, then highest."""
-    xs = [x for piece in pieces for x, _ in piece.corners]
-    ys = [y for piece in pieces for _, y in piece.corners]
-    return (
-        min(xs, default=0.0), min(ys, default=0.0), min(piece.bottom for piece in pieces),
-        max(xs, default=0.0), max(ys, default=0.0), max(piece.top for piece in pieces),
-    )  # fmt: skip
+def _boxes(elements: Sequence[Sequence[Carrier]]) -> Floats:
+    """The boxes (n, 6) round elements, each in pieces: lowest x, y, z, then highest."""
+    outlines = [
+        [corner for piece in pieces for corner in piece.corners] or [(0.0, 0.0)]
+        for pieces in elements
+    ]
+    corners = np.array([corner for outline in outlines for corner in outline])
+    counts = np.array([len(outline) for outline in outlines])
+    first = np.cumsum(counts) - counts
+    low, high = (bound.reduceat(corners, first) for bound in (np.minimum, np.maximum))
+    bottoms = [[min(piece.bottom for piece in pieces)] for pieces in elements]
+    tops = [[max(piece.top for piece in pieces)] for pieces in elements]
+    return np.hstack([low, bottoms, high, tops])
 
 
-def _below(keys: Sequence[str], extents: Floats) -> dict[str, str]:
+def _below(keys: Sequence[str], boxes: Floats) -> dict[str, str]:
     """The element under the foot of each: the nearest below it, then the nearest aside.
 
-    ``extents`` (n, 6) are their boxes; elements with nothing under them are left out.
+    ``boxes`` (n, 6) are those of the elements; those with nothing under them are left out.
     """
-    low, high = extents[:, :3], extents[:, 3:]
+    low, high = boxes[:, :3], boxes[:, 3:]
     feet = np.column_stack([(low[:, :2] + high[:, :2]) / 2.0, low[:, 2]])
     reach = np.array([_ASIDE, _ASIDE, _REACH]), np.array([_ASIDE, _ASIDE, _OVERLAP])
     under = np.hstack([feet - reach[0], feet + reach[1]])
