@@ -54,37 +54,34 @@ class Kind:
 
 
 class Entity:
-    """One entity, or a value that names its type (number 0)."""
+    """One entity of a file."""
 
-    __slots__ = ("_kind", "_number", "_row", "_texts", "file")
+    __slots__ = ("_number", "_row", "_texts", "file")
 
-    def __init__(
-        self,
-        file: Entities,
-        kind: Kind,
-        number: int,
-        row: int,
-        texts: list[bytes] | None = None,
-    ) -> None:
+    def __init__(self, file: Entities, number: int, row: int) -> None:
         self.file = file
-        self._kind = kind
         self._number = number
         self._row = row
-        self._texts = texts
+        self._texts: list[bytes] | None = None
+
+    @property
+    def _kind(self) -> Kind:
+        return self.file.kind_in(self._row)
 
     def id(self) -> int:
-        """Return the number that the file gives it."""
+        """Return the number that the file gives it, 0 for a value."""
         return self._number
 
     def is_a(self, name: str | None = None) -> Any:
         """Return its class, or whether it is of a class or one that descends from it."""
-        return self._kind.name if name is None else name in self._kind.ancestors
+        kind = self._kind
+        return kind.name if name is None else name in kind.ancestors
 
     def get_argument(self, place: int) -> Any:
         """Return an attribute; IndexError where its class has none there."""
         texts = self._texts
         if texts is None:
-            texts = self._texts = self.file.texts(self._row, self._kind)
+            texts = self._texts = self.file.texts(self._row)
         return value(texts[place], self.file)
 
     __getitem__ = get_argument
@@ -107,24 +104,40 @@ class Entity:
 
     def get_info(self, *, recursive: bool = False) -> dict[str, Any]:
         """Return number, class and attributes by name; what it refers to stays as it is."""
-        return {
-            "id": self._number,
-            "type": self._kind.name,
-            **dict(zip(self._kind.places, self, strict=True)),
-        }
+        values = dict(zip(self._kind.places, self, strict=True))
+        return {"id": self._number, "type": self._kind.name, **values}
 
     def __eq__(self, other: object) -> bool:
         if not isinstance(other, Entity):
             return False
-        if self._number or other._number:
-            return self.file is other.file and self._number == other._number
-        return self._kind is other._kind and self._texts == other._texts
+        return self.file is other.file and self._number == other.id()
 
     def __hash__(self) -> int:
-        return hash((self._number, self._kind.name))
+        return hash(self._number)
 
     def __repr__(self) -> str:
         return f"#{self._number}={self._kind.name}{tuple(self)}"
+
+
+class TypedValue(Entity):
+    """A value that names its type, such as IFCLABEL('B12'); its only attribute is the value."""
+
+    __slots__ = ("_type",)
+
+    def __init__(self, file: Entities, type_: Kind, text: bytes) -> None:
+        super().__init__(file, 0, -1)
+        self._type = type_
+        self._texts = [text]
+
+    @property
+    def _kind(self) -> Kind:
+        return self._type
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, TypedValue) and (self._type, self[0]) == (other._type, other[0])
+
+    def __hash__(self) -> int:
+        return hash(self._type.name)
 
 
 class Entities:
@@ -163,11 +176,10 @@ class Entities:
         found: list[Entity] = []
         for keyword in _with_subtypes(declaration.as_entity()):
             if keyword in self._rows_of:
-                kind = self._kind(keyword)
                 rows = self._rows_of[keyword]
                 numbers = self._census.ids[rows]
                 pairs = zip(numbers.tolist(), rows.tolist(), strict=True)
-                found += [Entity(self, kind, number, row) for number, row in pairs]
+                found += [Entity(self, number, row) for number, row in pairs]
         return tuple(found)
 
     def get_inverse(self, entity: Entity) -> tuple[Entity, ...]:
@@ -182,11 +194,16 @@ class Entities:
                 users.append(user)
         return tuple(users)
 
-    def texts(self, row: int, kind: Kind) -> list[bytes]:
+    def kind_in(self, row: int) -> Kind:
+        """Return the class of the entity in a row."""
+        return self._kinds_in_file[self._kind_in_row[row]]
+
+    def texts(self, row: int) -> list[bytes]:
         """Return the attributes of an entity as they are written, as many as its class has."""
         content, end = self._content, self._ends[row]
         start = content.index(b"(", self._starts[row]) + 1
         found = attributes(content[start : content.rindex(b")", start, end)], self._counts[row])
+        kind = self._kinds_in_file[self._kind_in_row[row]]
         expected = len(kind.places)
         if len(found) != expected:
             # Missing ones count as not stated, surplus ones are passed over; a finding says so.
@@ -198,13 +215,11 @@ class Entities:
     def refer(self, number: int) -> Entity | None:
         """Return an entity, None where there is none of this number."""
         row = self._rows[number] if number < self._table_end else self._beyond.get(number, -1)
-        if row < 0:
-            return None
-        return Entity(self, self._kinds_in_file[self._kind_in_row[row]], number, row)
+        return Entity(self, number, row) if row >= 0 else None
 
-    def named(self, keyword: str, text: bytes) -> Entity:
+    def named(self, keyword: str, text: bytes) -> TypedValue:
         """Return a value that names its type."""
-        return Entity(self, self._kind(keyword), 0, -1, [text])
+        return TypedValue(self, self._kind(keyword), text)
 
     @cached_property
     def _rows_of(self) -> dict[str, Ints]:

@@ -52,8 +52,11 @@ def value(text: bytes, holder: Holder) -> Any:
     """Return the value of an attribute; what fits no form of a value stays text."""
     mark = text[0] if text else _DOLLAR
     if mark == _HASH:
-        number = _number(text[1:])
-        return holder.refer(number) if isinstance(number, int) else None
+        try:
+            number = int(text[1:])
+        except ValueError:  # what follows the number makes it none
+            return None
+        return holder.refer(number)
     if mark in _NOTHING:
         return None
     if mark == _QUOTE:
