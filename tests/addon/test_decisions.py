@@ -158,3 +158,21 @@ def test_redistribution_is_stated_per_line_and_taken_back():
     assert [r.on.line for r in job.parse(text).rules.redistribution] == ["L1"]
     with pytest.raises(JobError, match="no part"):
         decisions.decide_redistribution(text, "L1", "much")
+
+
+def test_what_somebody_else_wrote_into_the_job_file_is_not_overwritten(tmp_path):
+    opened = OpenedModel.open(tmp_path / "house.ifc")
+    opened.decide("first", "title: First\n")
+    by_hand = "title: By hand\n"
+    opened.job_path.write_text(by_hand, encoding="utf-8")
+
+    for act in (lambda: opened.decide("second", "title: Second\n"), opened.undo):
+        with pytest.raises(JobError, match=r"changed by somebody else .* Balance the lines again"):
+            act()
+
+    assert opened.job_path.read_text(encoding="utf-8") == by_hand
+    assert opened.text == "title: First\n"
+    assert len(opened.done) == 1
+    opened.read_again()
+    opened.decide("third", "title: Third\n")
+    assert opened.job_path.read_text(encoding="utf-8") == "title: Third\n"

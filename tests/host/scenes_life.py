@@ -4,6 +4,7 @@ import gc
 import threading
 import weakref
 
+import FreeCAD
 import shiboken2
 from host_tools import QtCore, QtGui, QtWidgets, activate, click, settle, wait_until, widget
 from scenes_model import copied, opened
@@ -82,4 +83,41 @@ def faulty_painting():
     desk.choose_line(2)
     settle(0.2)
     found["painted_again"] = canvas._painted is not None
+    return found
+
+
+def other_document():
+    """Make another document active while a run goes on, and come back; type while it goes on."""
+    desk = activate()
+    opened(desk, copied())
+    from freecad.spanledger.present import decisions
+
+    first = FreeCAD.ActiveDocument.Name
+    FreeCAD.newDocument("Other")
+    settle(0.2)
+    FreeCAD.setActiveDocument(first)
+    settle(0.2)
+    desk.choose_line(10)
+    where = decisions.where_is(desk.solved.outcome.lines[0].line, 0)
+    desk.decide("fixed", lambda text: decisions.decide_support(text, where, "fixed"))
+    FreeCAD.setActiveDocument("Other")
+    wait_until(lambda: not desk.runs.busy, what="the run")
+    settle(0.3)
+    found = {"elsewhere": [desk.panels.list.model.shown(), desk.panels.strip.title.text()]}
+    found["objects"] = len(FreeCAD.getDocument("Other").Objects)
+    FreeCAD.setActiveDocument(first)
+    settle(0.3)
+    found["back"] = desk.panels.list.model.shown()
+    support = desk.solved.outcome.lines[0].line.joints[0].support
+    found["fixed"] = support.rotation > 0.0
+
+    desk.choose_line(0)
+    spots = desk.panels.strip.canvas.drawing.spots
+    desk.choose_spot(next(s for s in spots if (s.kind, s.number) == ("member", 1)))
+    widget(QtWidgets.QLineEdit, "SpanledgerActionValue").setText("12.5")
+    name, model = FreeCAD.ActiveDocument.Name, desk.opened
+    desk._look_closer(name, model.outcome, model.settings)
+    wait_until(lambda: not desk.runs.busy_behind, what="the checks")
+    settle(0.1)
+    found["typed"] = widget(QtWidgets.QLineEdit, "SpanledgerActionValue").text()
     return found

@@ -32,3 +32,15 @@ def test_a_fault_in_painting_leaves_no_painter_at_work(in_freecad):
     assert found["painted_again"]
     assert "does not handle (AttributeError)" in found["log"]
     assert "Traceback" not in found["log"]
+
+
+def test_a_run_that_ends_in_another_document_stays_out_of_its_docks(in_freecad):
+    found = in_freecad("scenes_life:other_document")
+
+    assert found["elsewhere"] == [0, ""]
+    assert found["objects"] == 0
+    assert found["back"] == 11
+    assert found["fixed"]
+    assert found["typed"] == "12.5"  # checks that arrive leave the form as it is
+    assert "Traceback" not in found["log"]
+    assert "does not handle" not in found["log"]

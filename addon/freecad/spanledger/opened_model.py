@@ -7,6 +7,7 @@ these texts, so that nothing else has to be reversible.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
+from contextlib import suppress
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
 from pathlib import Path
@@ -285,12 +286,18 @@ class OpenedModel:
         return self._settings[text]
 
     def _write(self, text: str) -> None:
+        if self.job_path.exists() and _read(self.job_path) != self.text:
+            raise JobError(
+                f"The decision was not kept: '{self.job_path.name}' was changed by somebody else "
+                f"meanwhile. Balance the lines again, which reads it, and then decide."
+            )
         beside = self.job_path.with_name(f".{self.job_path.name}.new")
         try:
             beside.write_text(text, encoding="utf-8")
             beside.replace(self.job_path)
         except OSError as error:
-            beside.unlink(missing_ok=True)
+            with suppress(OSError):  # what hinders writing may hinder this, too
+                beside.unlink(missing_ok=True)
             raise JobError(
                 f"The decision was not kept: '{self.job_path}' cannot be written "
                 f"({error.strerror or error}). Make the folder writable, or choose another job "

@@ -180,7 +180,9 @@ class Desk(QtCore.QObject):
             if self.opened_models.get(name) is opened:
                 opened.take_compared(found)
                 self._show_all(name)
-                self.panels.show_changes(found, opened)
+                if self.opened is opened:
+                    self.panels.show_changes(found, opened)
+                    self.panels.running.clear()
                 self._look_closer(name, found.after, settings)
 
         self.runs.start(task, done)
@@ -339,6 +341,8 @@ class Desk(QtCore.QObject):
         opened = self.opened_models[name]
         rows = self._rows(opened)
         self.picture.show(name, opened, [row.state for row in rows])
+        if FreeCAD.ActiveDocument is None or FreeCAD.ActiveDocument.Name != name:
+            return  # the docks show the active document; this one's turn comes with it
         self.panels.show_session(opened, rows)
         self._show_diagram()
         count = len(opened.outcome.lines)
@@ -448,6 +452,8 @@ class Desk(QtCore.QObject):
         self._watch()
 
     def _tell_what_moved(self, opened: OpenedModel, title: str) -> None:
+        if self.opened is not opened:
+            return  # another document was made active meanwhile
         if opened.previous is None or self.line is None:
             self.panels.running.clear()
             return

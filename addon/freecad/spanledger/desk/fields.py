@@ -42,11 +42,11 @@ def button(name: str, text: str, tip: str = "") -> Any:
 def facts_text(facts: Sequence[tuple[str, str]]) -> str:
     """Return facts as rich text; whatever came from a model is escaped."""
     rows = [
-        f"<tr><td style='padding-right:8px'><i>{_escaped(name)}</i></td>"
+        f"<tr><td width='34%' style='padding-right:8px'><i>{_escaped(name)}</i></td>"
         f"<td>{_escaped(words)}</td></tr>"
         for name, words in facts
     ]
-    return f"<table>{''.join(rows)}</table>"
+    return f"<table width='100%'>{''.join(rows)}</table>"
 
 
 def facts_label(name: str) -> Any:

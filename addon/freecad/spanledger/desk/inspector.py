@@ -50,8 +50,10 @@ class Inspector(QtWidgets.QScrollArea):
         super().__init__(parent)
         self.setObjectName("SpanledgerInspector")
         self.setWidgetResizable(True)
-        self.setMinimumWidth(270)
-        self.setMaximumWidth(380)
+        # A GlobalId, 22 characters without a break, stands whole beside what it is.
+        letter = self.fontMetrics().averageCharWidth()
+        self.setMinimumWidth(max(270, 46 * letter))
+        self.setMaximumWidth(max(380, 60 * letter))
         self.setFrameShape(QtWidgets.QFrame.Shape.NoFrame)
         self.clear()
 
