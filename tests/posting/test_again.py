@@ -289,3 +289,26 @@ def test_results_of_another_case_list_replace_the_old_names(model):
     assert set(sets_of(model, COLUMN_A)["Spanledger_Reactions"]) == {
         "id", "Vertical", "B-1 / Live"
     }  # fmt: skip
+
+
+@pytest.mark.parametrize("name", ["Effects", "Diagrams", "Record", "Reactions"])
+def test_a_set_that_somebody_renamed_is_theirs_and_ours_gets_a_global_id_of_its_own(model, name):
+    outcome = two_lines()
+    writer.post(model, model, outcome)
+    data = model.read_bytes()
+    at = data.index(f"'Spanledger_{name}'".encode())
+    model.write_bytes(data[:at] + b"'State of May'" + data[at + len(f"'Spanledger_{name}'") :])
+    report = writer.post(model, model, outcome)
+    again = writer.post(model, model, outcome)
+
+    assert "set-renamed" in {f.slug for f in report.findings}
+    assert (again.written, again.updated) == (0, 0)
+    file = ifcopenshell.open(str(model))
+    ids = [entity.GlobalId for entity in file.by_type("IfcRoot")]
+    assert len(set(ids)) == len(ids)
+    names = [s.Name for s in file.by_type("IfcPropertySet")]
+    assert names.count("State of May") == 1
+    assert names.count(f"Spanledger_{name}") == 2
+    writer.remove(model, model)
+    left = ifcopenshell.open(str(model)).by_type("IfcPropertySet")
+    assert [s.Name for s in left] == ["State of May"]

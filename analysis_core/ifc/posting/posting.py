@@ -27,6 +27,7 @@ from analysis_core.ifc.posting.property_sets import (
     EFFECTS,
     REACTIONS,
     RECORD,
+    SET_NAMES,
     EffectsWriter,
     RecordWriter,
     SetWriter,
@@ -34,6 +35,7 @@ from analysis_core.ifc.posting.property_sets import (
 from analysis_core.ifc.posting.result_groups import ResultGroups, reaction_id, rewritten_ids
 from analysis_core.ifc.posting.section_forces import CaseStations
 from analysis_core.ifc.posting.set_contents import contents_in_block, timeless
+from analysis_core.ifc.posting.set_ids import set_ids
 from analysis_core.ifc.posting.support_reactions import ReactionsWriter, support_reactions
 from analysis_core.ifc.step import append
 from analysis_core.ifc.step.container import Container
@@ -145,7 +147,11 @@ class Posting:
             return  # not even units, where nothing carries results
         lines = append.Lines(append.first_free(index, cleared.kept), index.newline)
         owner, units = owner_history(index, lines), measures(index, lines)
-        sets = SetWriter(lines, self._elements, schema=index.schema, owner=owner, measures=units)
+        ids, renamed = set_ids(index, [*self._elements], SET_NAMES)
+        self._findings += renamed
+        sets = SetWriter(
+            lines, self._elements, ids, schema=index.schema, owner=owner, measures=units
+        )
         known = [(e, parts) for e, parts in self._parts.items() if e in self._elements]
         for done in self._write_sets(sets, known, index.schema):
             yield lines.taken()

@@ -14,7 +14,6 @@ from datetime import UTC, datetime
 
 from analysis_core import __version__
 from analysis_core.findings import Finding
-from analysis_core.ifc.global_ids import derived_ids
 from analysis_core.ifc.posting.governing import ElementEffects
 from analysis_core.ifc.posting.measures import Measures
 from analysis_core.ifc.step.append import Lines
@@ -35,13 +34,14 @@ CAUTION = "Computed from the model as idealised; to be verified by a licensed en
 class SetWriter:
     """Writes sets into one file: its schema, measures and owner, and the time of posting.
 
-    ``elements``: instance of each element by GlobalId.
+    ``elements``: instance of each element by GlobalId; ``ids``: as ``set_ids`` gives them.
     """
 
     def __init__(
         self,
         lines: Lines,
         elements: Mapping[str, int],
+        ids: Mapping[str, tuple[Sequence[str], Sequence[str]]],
         *,
         schema: str,
         owner: str,
@@ -54,9 +54,7 @@ class SetWriter:
         # The attribute SetPointValue is new in IFC4.
         self.bounded_end = ")" if schema == "IFC2X3" else ",$)"
         self._rows = {element: row for row, element in enumerate(elements)}
-        purposes = [p for name in SET_NAMES for p in (name, f"{name}/relation")]
-        ids = derived_ids(elements, purposes)
-        self._ids = {name: (ids[name], ids[f"{name}/relation"]) for name in SET_NAMES}
+        self._ids = ids
         self._forms = {name: lines.form(self.forms(name, "%s")) for name in SET_NAMES}
         self.written: list[str] = []
         """GlobalIds of the sets written so far."""
