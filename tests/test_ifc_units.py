@@ -127,7 +127,9 @@ def test_line_loads_are_made_of_force_and_length_where_both_are_assigned(project
     assert units.to_si("MODULUSOFELASTICITYUNIT") == pytest.approx(1e9, rel=1e-15)
     assert units.to_si("MOMENTOFINERTIAUNIT") == pytest.approx(1e-12, rel=1e-15)
     messages = {f.message.split("(")[1].split(")")[0]: f for f in units.findings()}
-    assert messages["LINEARFORCEUNIT"].severity == "note"
+    # Kilonewtons per millimetre may well be meant as per metre: a thousand times as much.
+    assert messages["LINEARFORCEUNIT"].severity == "warning"
+    assert messages["MOMENTOFINERTIAUNIT"].severity == "note"
     assert "force and length" in messages["LINEARFORCEUNIT"].message
     assert "force and length" in messages["MODULUSOFELASTICITYUNIT"].message
     # A moment comes out in N·m either way, so there is nothing to say.

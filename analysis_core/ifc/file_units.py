@@ -30,6 +30,9 @@ _DOUBTFUL = frozenset(
     if dimension[1] or (dimension[0] and dimension[2])
 ) - {"MASSDENSITYUNIT", "MASSPERLENGTHUNIT", "ACCELERATIONUNIT"}
 
+# Kinds made of a force: loads, moments, stiffnesses, moduli.
+_OF_FORCE = frozenset(kind for kind, (size, _, _) in KINDS.items() if size[0] and size[2])
+
 
 class UnitError(ValueError):
     """A unit whose size in SI cannot be told; the message says why."""
@@ -116,7 +119,7 @@ class FileUnits:
             return ()
         return tuple(
             Finding(
-                "warning" if kind in _DOUBTFUL and basis == "SI" else "note",
+                "warning" if kind in (_DOUBTFUL if basis == "SI" else _OF_FORCE) else "note",
                 "missing-unit",
                 f"'{self._file_name}' assigns no unit of {_kind_name(kind)} ({kind}); values were "
                 f"taken as {_basis_text(basis)}. Assign the unit in the project if that is wrong.",
