@@ -181,6 +181,16 @@ def test_another_profile_of_nearly_the_same_name_stays_one_of_its_own(tmp_path):
     assert (candidate.name, candidate.origin) == ("IPE300", "l.csv")
 
 
+def test_a_name_that_several_profiles_of_the_model_have_is_not_offered(tmp_path):
+    path = tmp_path / "model.ifc"
+    text = MODEL.read_text(encoding="utf-8").replace("'IPE 270'", "'IPE 300'")
+    path.write_text(text, encoding="utf-8")
+    offer = pipeline.offered(pipeline.stock(path), load(JOB), "model")
+    assert "IPE 300" not in {c.name for c in offer.candidates}
+    (told,) = offer.findings
+    assert (told.slug, "IPE 300" in told.message) == ("profile-ambiguous", True)
+
+
 def test_the_list_of_the_host_is_understood_row_by_row():
     path = Path("/usr/share/freecad/Mod/Arch/Presets/profiles.csv")
     if shutil.which("freecad") is None or not path.exists():

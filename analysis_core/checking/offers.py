@@ -57,8 +57,14 @@ class Offer:
 
 
 def of_model(stock: Stock) -> Offer:
-    """Return the profiles of a model."""
-    return Offer(tuple(Candidate(n, stocked.section()) for n, stocked in stock.profiles.items()))
+    """Return the profiles of a model, without those whose name does not say which is meant."""
+    found = tuple(
+        Candidate(name, stocked.section())
+        for name, stocked in stock.profiles.items()
+        if name not in stock.ambiguous
+    )
+    told = [] if not stock.ambiguous else [_ambiguous(sorted(stock.ambiguous))]
+    return Offer(found, tuple(told))
 
 
 def of_table(
@@ -151,6 +157,15 @@ def _same_profile(one: Section, other: Section) -> bool:
     return abs(one.area - other.area) <= _SAME_AREA * one.area and all(
         abs(a - b) <= _SAME_OUTLINE * a
         for a, b in ((one.depth, other.depth), (one.width, other.width))
+    )
+
+
+def _ambiguous(names: Sequence[str]) -> Finding:
+    return Finding(
+        "warning",
+        "profile-ambiguous",
+        f"{listed(names)}: the model has profiles of different dimensions with these names, so "
+        f"they are not offered.",
     )
 
 

@@ -209,7 +209,9 @@ class LightestDialog(QtWidgets.QDialog):
             self.kinds.addItem(item)
         self.kinds.setVisible(bool(kinds))
         self.kinds_label.setVisible(bool(kinds))
-        told = self._shelf.findings if self.source.currentData() == HOST else ()
+        told = offer.findings if offer is not None else ()
+        if self.source.currentData() == HOST:
+            told = self._shelf.findings
         self.notes.setText("\n".join(finding.message for finding in told))
         self.notes.setVisible(bool(told))
 
