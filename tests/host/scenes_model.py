@@ -341,6 +341,8 @@ def distribution():
     view.setCurrentIndex(next(i for i in range(view.count()) if "Finishes" in view.itemText(i)))
     settle(0.2)
     found["whole"] = table.rowCount()
+    found["names"] = [table.verticalHeaderItem(i).text() for i in range(table.rowCount())]
+    found["notes"] = widget(QtWidgets.QLabel, "SpanledgerRecordNotes").text()
     click(widget(QtWidgets.QPushButton, "SpanledgerRecordFirst"))
     found["first"] = table.rowCount()
     found["rows"], found["marked"] = [], []

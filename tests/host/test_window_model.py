@@ -111,6 +111,8 @@ def test_the_distribution_fills_row_by_row(in_freecad):
     found = in_freecad("scenes_model:distribution")
 
     assert "Choose a case" in found["envelope"]
+    assert "fixed-end moment, kN·m" in found["names"]
+    assert "far end pinned. 2-3:" in found["notes"]  # one note ends before the next begins
     assert 0 < found["first"] < found["rows"][0] < found["rows"][1] < found["whole"]
     assert found["rows"] == sorted(found["rows"])
     assert ["joint", 2] in found["marked"]  # the larger unbalance is released first

@@ -100,7 +100,7 @@ class RecordDesk(QtWidgets.QWidget):
         self.table.setColumnCount(len(table.columns))
         self.table.setHorizontalHeaderLabels(list(table.columns))
         self.table.setRowCount(step.rows)
-        self.table.setVerticalHeaderLabels([tr(row.name) for row in table.rows[: step.rows]])
+        self.table.setVerticalHeaderLabels([self._name(row) for row in table.rows[: step.rows]])
         for number, row in enumerate(table.rows[: step.rows]):
             for column, text in enumerate(row.cells):
                 self.table.setItem(number, column, _cell(text, number >= step.rows - step.new))
@@ -109,7 +109,12 @@ class RecordDesk(QtWidgets.QWidget):
         notes = [*table.notes] if step.rows == len(table.rows) else []
         if self._step == len(steps) - 1:
             notes.append(self._recorded.closing)
-        self.notes.setText(" ".join(notes))
+        self.notes.setText(" ".join(note if note.endswith(".") else f"{note}." for note in notes))
+
+    def _name(self, row: Any) -> str:
+        """Return the name of a row; the first row of moments states the unit of them all."""
+        unit = f", {self._recorded.unit}" if row.kind == "held" and self._recorded else ""
+        return tr(row.name) + unit
 
 
 def _cell(text: str, new: bool) -> Any:

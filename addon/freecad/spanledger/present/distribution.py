@@ -47,6 +47,8 @@ class Recorded:
     tables: tuple[RecordTable, ...]
     steps: tuple[Step, ...]
     closing: str
+    unit: str
+    """Of every moment in the tables."""
 
 
 def recorded(
@@ -74,7 +76,8 @@ def recorded(
     except AnalysisError as error:
         return str(error)
     tables = tuple(record_tables(record, units))
-    return Recorded(tables, tuple(_steps(tables, record)), closing_note(record, units))
+    closing = closing_note(record, units)
+    return Recorded(tables, tuple(_steps(tables, record)), closing, units.symbol("moment"))
 
 
 def _steps(tables: tuple[RecordTable, ...], record: DistributionRecord) -> list[Step]:
