@@ -34,6 +34,7 @@ def _shorten(draft: Draft) -> bool:
         cuts = [
             min(draft.joints[number].width / 2.0, _MOST * size) for number in (bar.start, bar.end)
         ]
+        bar.cuts = cuts[0], cuts[1]
         share = [cut / size for cut in cuts]
         run = bar.station_end - bar.station_start
         bar.station_start += share[0] * run

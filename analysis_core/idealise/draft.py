@@ -58,6 +58,8 @@ class Bar:
     end_spring: float = RIGID
     role: Role = "span"
     span: int | None = None
+    cuts: tuple[float, float] = (0.0, 0.0)
+    """What clear spans leave out at its start and end, m: that lies over bearings."""
 
 
 @dataclass(slots=True)

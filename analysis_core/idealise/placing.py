@@ -125,7 +125,8 @@ class Placer:
     ) -> None:
         """Put a force per metre on all bars of a member, with whatever they reach beyond it.
 
-        ``forces`` hold at the member's start and end.
+        ``forces`` hold at the member's start and end.  What clear spans leave out over a bearing
+        goes to the end of the bar there.
         """
         seats = self.seats(draft, member)
         stations = seats[0].low, seats[-1].high
@@ -135,6 +136,22 @@ class Placer:
                 first = between(stations, forces, seat.low)
                 last = between(stations, forces, seat.high)
             self._press(seat, case, first, last, (0.0, seat.length), source)
+            self._press_bearings(seat, case, (first, last), source)
+
+    def _press_bearings(
+        self, seat: Seat, case: str, forces: tuple[Pair, Pair], source: str
+    ) -> None:
+        """``forces`` per metre hold at the lowest and highest station of the bar."""
+        if seat.bar.station_start > seat.bar.station_end:
+            forces = forces[1], forces[0]
+        for place, cut, force in zip((0.0, seat.length), seat.bar.cuts, forces, strict=True):
+            transverse, axial = seat.local(force)
+            if cut and (transverse or axial):
+                size = cut * seat.stretch
+                self.put(
+                    seat.draft,
+                    PointForce(case, seat.number, place, size * transverse, size * axial, source),
+                )
 
     def point(
         self, draft: Draft, member: str, case: str, station: float, force: Pair, source: str

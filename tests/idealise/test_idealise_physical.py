@@ -355,6 +355,24 @@ def test_what_acts_over_a_bearing_goes_to_it():
     assert sum((a.end - a.start) * a.transverse[0] for a in spread) == pytest.approx(1700.0)
 
 
+@pytest.mark.parametrize("drawn", [1, -1])
+@pytest.mark.parametrize("pieces", [[0.0, 9.0], [0.0, 4.0, 9.0]])
+def test_clear_spans_lose_nothing_of_a_load_on_whole_beams(pieces, drawn):
+    """2 kN/m over 9 m: 0.6 m over three columns of 300 mm go to them, not into the spans."""
+    columns = [column(f"C{i}", x, 0.0, 0.0, Z - 0.2) for i, x in enumerate((0.0, 4.0, 9.0))]
+    ends = [(a, b)[::drawn] for a, b in itertools.pairwise(pieces)]
+    beams = [beam(f"B{a}", (a, 0.0, Z), (b, 0.0, Z)) for a, b in ends]
+    action = ActionSetting("Q", Selector(), "uniform", (2e3,))
+    settings = Settings(analysis=Analysis(spans="face", self_weight=False), actions=(action,))
+    line = only(idealise(house(beams, columns), settings))
+    solution = distribution.solve(line, ["Q"])
+
+    reactions = solution.reactions[0, :, 1]
+    assert sum(reactions) == pytest.approx(2e3 * 9.0)
+    moment = 2e3 * (3.7**3 + 4.7**3) / (8.0 * (3.7 + 4.7))  # three moments, clear spans
+    assert abs(solution.end_moments[0]).max() == pytest.approx(moment)
+
+
 def test_a_column_on_a_beam_hands_the_upper_line_down():
     """The upper beam rests on a column at x = 4 that stands on the lower beam."""
     carriers = [
