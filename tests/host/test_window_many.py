@@ -3,7 +3,7 @@
 Limits are ratios taken in the same run: to the yardstick (a fixed piece of plain work, about
 40 ms on the machine of the first figures) or to an empty view.  They are about twice what was
 measured there with software rendering: start 0.4 s of processor time, drawing 1.2 s, a frame
-58 ms against 15 ms, and an edit that nothing is known of from before 90 ms of processor time, of
+58 ms against 15 ms, and an edit that nothing is known of from before 100 ms of processor time, of
 which 23 ms is the rendering of one frame.  Each prints what it measured.
 """
 
@@ -32,4 +32,4 @@ def test_an_edit_is_drawn_at_once(in_freecad):
 
     print({name: round(value, 3) for name, value in found.items() if isinstance(value, float)})
     assert found["median"] < 6.0 * found["yard"]
-    assert found["processor"] < 4.0 * found["processor_yard"]
+    assert found["processor"] < 5.0 * found["processor_yard"]
