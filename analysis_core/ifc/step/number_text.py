@@ -65,7 +65,7 @@ def _print_block(
     block: Floats, places: list[int], digits: int, before: str, after: str,
     rows: list[Row | None],
 ) -> None:  # fmt: skip
-    """Print the rows of a block; the row of each goes to its place in ``rows``."""
+    """Print the rows of a block, equal ones once; each goes to its place in ``rows``."""
     largest = np.abs(block).max(axis=1)
     magnitude = np.floor(np.log10(np.where(largest > 0.0, largest, 1.0)))
     good = np.isfinite(magnitude)
@@ -73,13 +73,22 @@ def _print_block(
     counts = np.rint(block[good] * 10.0 ** decimals[:, None])
     kept = np.flatnonzero(good)
     fits = np.abs(counts).max(axis=1, initial=0.0) < _LARGEST
+    between, end = after + before, after[:-1]
     for wanted in np.unique(decimals).tolist():
         same = np.flatnonzero((decimals == wanted) & fits)
-        if same.size:
-            whole = counts[same].astype(np.int64)
-            texts = _texts(whole, wanted, before.encode(), after.encode())
-            for i, text, count in zip(kept[same].tolist(), texts, whole, strict=True):
-                rows[places[i]] = Row(text, bytes((wanted,)) + count.tobytes())
+        if not same.size:
+            continue
+        whole = counts[same].astype(np.int64)
+        keys = [bytes((wanted,)) + count.tobytes() for count in whole]
+        one = dict(zip(keys, range(len(keys)), strict=True))
+        texts = _texts(whole[list(one.values())], wanted)
+        # What is the same about every number need not be copied before the last step.
+        known = {
+            key: Row(f"{before}{text.replace(',', between)}{end}", key)
+            for key, text in zip(one, texts, strict=True)
+        }
+        for i, key in zip(kept[same].tolist(), keys, strict=True):
+            rows[places[i]] = known[key]
 
 
 def _move_apart(block: Floats, apart: float) -> None:
@@ -90,23 +99,24 @@ def _move_apart(block: Floats, apart: float) -> None:
             x[i] = max(x[i], x[i - 1] + apart)
 
 
-def _texts(counts: NDArray[np.int64], decimals: int, before: bytes, after: bytes) -> list[str]:
-    """Return the text of each row of numbers, given as counts of the last decimal."""
+def _texts(counts: NDArray[np.int64], decimals: int) -> list[str]:
+    """Return the text of each row of numbers, given as counts of the last decimal: 1.5,-0.25."""
     flat = counts.reshape(-1)
     sizes = np.abs(flat)
     whole = max(1, len(str(int(sizes.max()))) - decimals)  # most digits before the point
-    sign = len(before)
-    point = sign + 1 + whole
-    out = np.empty((flat.size, point + 1 + decimals + len(after)), dtype=np.uint8)
-    out[:] = np.frombuffer(before + b"-" + b"0" * whole + b"." + b"0" * decimals + after, np.uint8)
+    point = 1 + whole
+    out = np.empty((flat.size, point + 1 + decimals + 1), dtype=np.uint8)
     digits = _digits(sizes, whole + decimals)
-    out[:, sign + 1 : point] = digits[:, :whole]
-    out[:, point + 1 : point + 1 + decimals] = digits[:, whole:]
+    out[:, 0] = ord("-")
+    out[:, 1:point] = digits[:, :whole]
+    out[:, point] = ord(".")
+    out[:, point + 1 : -1] = digits[:, whole:]
+    out[:, -1] = ord(",")
     keep = np.ones(out.shape, dtype=bool)
-    keep[:, sign] = flat < 0
+    keep[:, 0] = flat < 0
     # One digit stays before the point; those before it only behind a digit that is not zero.
     for place in range(whole - 1):
-        keep[:, sign + 1 + place] = sizes >= 10 ** (whole + decimals - 1 - place)
+        keep[:, 1 + place] = sizes >= 10 ** (whole + decimals - 1 - place)
     text = out[keep].tobytes().decode("ascii")
     lengths = np.count_nonzero(keep.reshape(len(counts), -1), axis=1)
     ends = np.cumsum(lengths).tolist()
