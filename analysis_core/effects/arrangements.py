@@ -13,7 +13,7 @@ from __future__ import annotations
 import itertools
 from collections.abc import Collection, Mapping, Sequence
 from copy import copy
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, field, fields, replace
 from operator import attrgetter, is_
 from typing import Literal, get_args
 
@@ -111,7 +111,8 @@ def split_by_span(
     form a part of their own.  A case all of whose actions stand on one span stays whole, but
     its one part names the span.  ``known`` says which part an action belongs to whose case name
     is already one of a part, as reactions handed down from a line that was itself split; parts
-    at the same place of different lines are told apart by their place.
+    at the same place of different lines are told apart by their place.  Their span is the one that
+    the action stands on.
     """
     return SpanSplitter(cases, split, known=known).split(line)
 
@@ -157,7 +158,7 @@ class SpanSplitter:
         case = action.case
         known = self._known.get(case)
         if known is not None:
-            return known if known.case in self._whole else None
+            return self._handed_down(line, action, known) if known.case in self._whole else None
         if case not in self._split:
             return self._whole.get(case)
         if case not in self._whole:
@@ -171,6 +172,14 @@ class SpanSplitter:
         if part is None:
             part = self._on_span[case, span] = _part(line, action)
         return part
+
+    def _handed_down(self, line: Line, action: Action, known: Part) -> Part:
+        """The known part, on the span that the action stands on here.
+
+        One part may be handed down to several lines, or twice to one, and keeps its name there.
+        """
+        span, _ = _place(line, action)
+        return known if span == known.span else replace(known, span=span)
 
 
 def recased(action: Action, case: str) -> Action:

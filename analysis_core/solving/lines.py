@@ -170,8 +170,7 @@ class _Solver:
         if case in self.rules.arrangements.split:
             place = f"{mark} {part.place}" if part.place.startswith("span") else part.place
             case = f"{part.case} @ {place or mark}"
-            span = line.members[transfer.member].span
-            self._known[case] = Part(case, part.case, place or mark, span)
+            self._known[case] = Part(case, part.case, place or mark)
         cos, sin = line.direction(line.members[transfer.member])
         return PointForce(
             case, transfer.member, transfer.position, cos * reaction, -sin * reaction,
