@@ -10,6 +10,7 @@ LABEL_LENGTH = 255
 """Longest IfcLabel and IfcIdentifier."""
 
 _PLAIN = re.compile(r"[\x20-\x26\x28\x29\x2b-\x5b\x5d-\x7e]*")
+_TO_ENCODE = re.compile(r"[^\x20-\x26\x28-\x5b\x5d-\x7e]")
 _ESCAPES = re.compile(
     r"''|\\\\|\\X2\\((?:[0-9A-F]{4})*)\\X0\\|\\X4\\((?:[0-9A-F]{8})*)\\X0\\"
     r"|\\X\\([0-9A-F]{2})|\\S\\(.)|\\P[A-I]\\|[\r\n]",
@@ -27,7 +28,7 @@ def string(text: str) -> str:
     """
     if _PLAIN.fullmatch(text):
         return f"'{text}'"
-    encoded = "".join(_character(c) for c in text)
+    encoded = _TO_ENCODE.sub(lambda match: _character(match[0]), text)
     if "/*" in encoded or "*/" in encoded:
         encoded = encoded.replace("*", "\\X\\2A")
     return f"'{encoded}'"
