@@ -139,3 +139,18 @@ def test_entities_are_equal_where_they_are_the_same_one(tmp_path: Path):
     assert entities.by_id(4)[2] == entities.by_id(4)[2]
     assert entities.by_id(4)[2] != entities.by_id(3)[2]
     assert len({entities.by_id(5), entities.by_id(6)[2]}) == 1
+
+
+@pytest.mark.parametrize("stretch", [1, 7, 64])
+def test_strings_over_the_border_of_two_stretches_stay_strings(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch, stretch: int
+):
+    whole = written(tmp_path, ODD).text
+    monkeypatch.setattr("analysis_core.ifc.step.blank._STRETCH", stretch)
+    monkeypatch.setattr("analysis_core.ifc.step.census._STRETCH", stretch)
+
+    cut = written(tmp_path, ODD).text
+
+    assert cut.census.ids.tolist() == whole.census.ids.tolist()
+    assert cut.census.ends.tolist() == whole.census.ends.tolist()
+    assert cut.census.shapes == whole.census.shapes

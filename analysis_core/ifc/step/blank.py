@@ -13,6 +13,9 @@ import numpy as np
 
 Span = tuple[int, int]
 
+_STRETCH = 1 << 21
+"""Bytes that are looked at together; what is worked out of them takes several times as much."""
+
 # \S\ shifts the next character by 128; that character may be a plain apostrophe (for the section
 # sign, say).  A doubled backslash before it is no directive.
 _SHIFTED_APOSTROPHE = re.compile(rb"(?<!\\)((?:\\\\)*\\S\\)'")
@@ -27,9 +30,9 @@ class Blanked:
     """
 
     text: bytes
+    open: int = -1
     comments: tuple[Span, ...] = ()
     stray: tuple[Span, ...] = ()
-    open: int = -1
 
 
 def blank(data: bytes) -> Blanked:
@@ -47,15 +50,24 @@ def blank(data: bytes) -> Blanked:
         for start, stop in (*comments, *stray):
             spaced[start:stop] = b" " * (stop - start)
         text = bytes(spaced)
-    raw = np.frombuffer(text, np.uint8)
-    quotes = raw == ord("'")
-    marks = np.flatnonzero(quotes)
-    # Stretches between apostrophes lie outside and inside of texts by turns.
-    stretches = np.diff(marks, prepend=0, append=raw.size)
-    outside = np.repeat(np.arange(stretches.size) % 2 == 0, stretches)
-    position = int(marks[-1]) if marks.size % 2 else -1
-    kept = (quotes | outside).view(np.uint8)
-    return Blanked(np.multiply(raw, kept).tobytes(), comments, stray, position)
+    return Blanked(*_without_strings(text), comments, stray)
+
+
+def _without_strings(text: bytes) -> tuple[bytes, int]:
+    """Return ``text`` with NUL within strings, and where one begins that is not closed, or -1."""
+    parts: list[bytes] = []
+    inside, last = 0, -1
+    for start in range(0, len(text), _STRETCH):
+        raw = np.frombuffer(text[start : start + _STRETCH], np.uint8)
+        quotes = raw == ord("'")
+        marks = np.flatnonzero(quotes)
+        # Stretches between apostrophes lie outside and inside of strings by turns.
+        stretches = np.diff(marks, prepend=0, append=raw.size)
+        outside = np.repeat(np.arange(stretches.size) % 2 == inside, stretches)
+        parts.append(np.multiply(raw, (quotes | outside).view(np.uint8)).tobytes())
+        if marks.size:
+            inside, last = (inside + marks.size) % 2, start + int(marks[-1])
+    return b"".join(parts), last if inside else -1
 
 
 def _comments(text: bytes) -> tuple[tuple[Span, ...], tuple[Span, ...]]:
