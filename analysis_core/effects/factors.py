@@ -220,12 +220,14 @@ def _rows(
             low[c] = shares[part.case] * stated[c]
     yield "", low, list(stated)
     # A share that stays elsewhere belongs to an action that is there; it may be absent as well.
-    for case in {p.case for p in parts if shares.get(p.case) and p.place}:
-        if combination.factors.get(case):
+    kept = dict.fromkeys(p.case for p in parts if shares.get(p.case) and p.place)
+    acting = [case for case in kept if combination.factors.get(case)]
+    for count in range(1, len(acting) + 1):
+        for absent in itertools.combinations(acting, count):
             yield (
-                f"without {case}",
-                [0.0 if p.case == case else v for p, v in zip(parts, low, strict=True)],
-                [0.0 if p.case == case else v for p, v in zip(parts, stated, strict=True)],
+                f"without {', '.join(absent)}",
+                [0.0 if p.case in absent else v for p, v in zip(parts, low, strict=True)],
+                [0.0 if p.case in absent else v for p, v in zip(parts, stated, strict=True)],
             )
 
 

@@ -522,6 +522,23 @@ def test_a_part_without_influence_is_not_named():
     assert source == "U1 (Q on span 1)"
 
 
+def test_cases_that_keep_a_share_elsewhere_may_be_absent_one_by_one_and_together():
+    cases = ("S3", "S1", "S2")
+    parts = tuple(Part(f"{c} @ span 1", c, "span 1", 1) for c in cases)
+    snow = Arrangements("x", dict.fromkeys(cases, 0.5))
+    every = [Combination("U1", "strength", dict.fromkeys(cases, 1.6))]
+
+    table = factor_table(every, parts, snow, (1,))
+
+    # In the order of the cases, so that equal results are named alike in every run.
+    assert table.labels == (
+        "", "without S3", "without S1", "without S2",
+        "without S3, S1", "without S3, S2", "without S1, S2", "without S3, S1, S2",
+    )  # fmt: skip
+    np.testing.assert_array_equal(table.low[4], [0.0, 0.0, 0.8])
+    np.testing.assert_array_equal(table.high[4], [0.0, 0.0, 1.6])
+
+
 def test_extremes_of_many_parts_are_named_together_as_each_alone():
     # 70 parts leave 140 marks, more than one integer holds; B extremes of two lines' parts.
     rng = np.random.default_rng(8)
