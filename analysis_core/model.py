@@ -110,6 +110,17 @@ class Material:
         return self.elastic_modulus / ratio[0] if ratio else 0.0
 
     @property
+    def analysed_shear_modulus(self) -> float:
+        """The shear modulus of an analysis that is flexible in shear, Pa.
+
+        As stated even where no structural material has it, since sections that stand for lattices
+        or sandwiches are modelled so; not where it can only be a slip of units.
+        """
+        ratio = self.elastic_modulus / self.shear_modulus if self.shear_modulus > 0.0 else 0.0
+        low, high = _SLIP_OF_UNITS
+        return self.shear_modulus if low < ratio < high else self.usable_shear_modulus
+
+    @property
     def shear_modulus_is_plausible(self) -> bool:
         """Whether the stated shear modulus goes with the modulus of elasticity."""
         low, high = _MODULUS_RATIOS.get(self.category, (0.0, *_ANY_RATIO))[1:]
@@ -125,6 +136,8 @@ _MODULUS_RATIOS = {
     "timber": _WOOD, "hardwood": _WOOD, "glulam": _WOOD, "lvl": _WOOD,
 }  # fmt: skip
 _ANY_RATIO = (1.8, 60.0)
+# E over G beyond these: kilo-, mega- or gigapascals, or pounds and inches, were mixed up.
+_SLIP_OF_UNITS = (0.1, 1000.0)
 
 
 @dataclass(frozen=True, slots=True)

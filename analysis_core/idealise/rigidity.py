@@ -134,11 +134,13 @@ def _report_oblique(member: AxisMember, section: Section, turn: _Turn, log: Log,
 
 
 def _report_shear_modulus(material: Material, log: Log) -> None:
-    """One rule for the analysis and the checks: what cannot be true is not used."""
+    """Checks use no shear modulus that cannot be true, the analysis no slip of units."""
     stated, used = material.shear_modulus, material.usable_shear_modulus
     if stated <= 0.0 or material.shear_modulus_is_plausible:
         return
     instead = f"G = {used / 1e9:.4g} GPa is taken from E" if used > 0.0 else "it is not used"
+    if material.analysed_shear_modulus == stated:
+        instead += " by the checks, while an analysis flexible in shear takes it as stated"
     log.add(
         "warning",
         "implausible-modulus",
@@ -156,7 +158,7 @@ def _shear_rigidity(
     assert section is not None
     assert material is not None
     areas = [s.shear_area for s in (section, end or section)]
-    modulus = material.usable_shear_modulus
+    modulus = material.analysed_shear_modulus
     if abs(turn.cos) < 0.9 or min(areas) <= 0.0 or modulus <= 0.0:
         what = "shear modulus" if modulus <= 0.0 else "shear area in the plane of bending"
         log.add(

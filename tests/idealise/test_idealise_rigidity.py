@@ -151,6 +151,19 @@ def test_a_shear_modulus_is_assumed_from_the_kind_of_material_and_said():
     assert "assumed-shear-modulus" in slugs(found)
 
 
+def test_a_shear_modulus_that_no_material_has_is_taken_as_stated_and_named():
+    # A lattice modelled as one bar: its shear stiffness is far below that of its chords.
+    soft = replace(STEEL, shear_modulus=STEEL.elastic_modulus / 150.0)
+    beam = member("B", (0.0, 0.0, 0.0), (6.0, 0.0, 0.0), material=soft)
+    nodes = [node(f"n{x}", (x, 0.0, 0.0), PINNED) for x in (0.0, 6.0)]
+    found = idealise(model([beam], nodes), Settings(analysis=Analysis(shear_flexible=True)))
+
+    expected = pytest.approx(0.004 * STEEL.elastic_modulus / 150.0)
+    assert only(found).members[0].pieces[0].shear == (expected,)
+    (finding,) = [f for f in found.findings if f.slug == "implausible-modulus"]
+    assert "takes it as stated" in finding.message
+
+
 @pytest.mark.parametrize("shear_flexible", [True, False])
 def test_a_shear_modulus_that_cannot_be_true_is_not_used_and_named(shear_flexible):
     on = Settings(
