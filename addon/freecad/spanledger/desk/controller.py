@@ -343,7 +343,7 @@ class Desk(QtCore.QObject):
         self.picture.show(name, opened, [row.state for row in rows])
         if FreeCAD.ActiveDocument is None or FreeCAD.ActiveDocument.Name != name:
             return  # the docks show the active document; this one's turn comes with it
-        self.panels.show_session(opened, rows)
+        self.panels.show_opened(opened, rows)
         self._show_diagram()
         count = len(opened.outcome.lines)
         if self.line is None or self.line >= count:

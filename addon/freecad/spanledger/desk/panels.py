@@ -44,7 +44,7 @@ class Panels:
         self.bearings = BearingsList()
         self.tabs.addTab(self.bearings, translate("Spanledger", "Reactions"))
         self.changes = ChangesList()  # becomes a tab once revisions are compared
-        self._session: OpenedModel | None = None
+        self._opened: OpenedModel | None = None
         self.tabs.currentChanged.connect(lambda _index: self._show_bearings())
         self.list_dock = _dock(
             window, "SpanledgerLinesDock", translate("Spanledger", "Beam lines"),
@@ -77,7 +77,7 @@ class Panels:
         if not self._arranged:
             self._arranged = True
             width, height = window.width(), window.height()
-            window.resizeDocks([self.list_dock], [width * 3 // 10], Qt.Orientation.Horizontal)
+            window.resizeDocks([self.list_dock], [width * 3 // 8], Qt.Orientation.Horizontal)
             window.resizeDocks([self.strip_dock], [height * 9 // 20], Qt.Orientation.Vertical)
 
     def disappear(self) -> None:
@@ -85,20 +85,20 @@ class Panels:
         for dock in self._docks:
             dock.hide()
 
-    def show_session(self, opened: OpenedModel, rows: list[Row]) -> None:
+    def show_opened(self, opened: OpenedModel, rows: list[Row]) -> None:
         """Show the lines and findings of a model."""
         self.strip.show_views(views_of(opened.outcome))
         self.list.show_rows(rows, opened.units)
         found = finding_rows(opened.outcome)
         self.findings.show_rows(found)
-        self._session = opened
+        self._opened = opened
         self._show_bearings()
         title = translate("Spanledger", "Findings ({count})").format(count=len(found))
         self.tabs.setTabText(1, title)
 
     def _show_bearings(self) -> None:
         """Fill the list of reactions when it is looked at; it may hold tens of thousands."""
-        opened = self._session
+        opened = self._opened
         if opened is not None and self.tabs.currentWidget() is self.bearings:
             self.bearings.show_rows(bearing_rows(opened.outcome, opened.units), opened.units)
 
@@ -182,7 +182,7 @@ class Panels:
         units = display_units()
         self.list.show_rows([], units)
         self.findings.show_rows([])
-        self._session = None
+        self._opened = None
         self.bearings.show_rows([], units)
         if self.tabs.indexOf(self.changes) >= 0:
             self.tabs.removeTab(self.tabs.indexOf(self.changes))
