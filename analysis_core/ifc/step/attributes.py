@@ -83,6 +83,11 @@ def _aggregate(inner: bytes, holder: Holder) -> tuple[Any, ...]:
     parts = inner.split(b",") if plain else _parts(inner)
     if not inner.strip():
         return ()
+    if plain and inner.count(b".") == len(parts) and b"_" not in inner:
+        try:
+            return tuple(map(float, parts))  # coordinates: the most there is in a file
+        except ValueError:
+            pass  # points elsewhere than in each number once
     found = [item for part in parts if (item := value(part, holder)) is not None]
     if found and type(found[0]) in (int, float):
         kinds = set(map(type, found))
