@@ -10,7 +10,13 @@ import math
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from analysis_core.checks.concrete_parts import ConcreteShape, bar_depth, outside, shape_of
+from analysis_core.checks.concrete_parts import (
+    ConcreteShape,
+    bar_depth,
+    compressed_flange,
+    outside,
+    shape_of,
+)
 from analysis_core.checks.design import MemberDesign, strength_of
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 from analysis_core.results import Extreme
@@ -207,7 +213,7 @@ def _bending(
         return None
     w = Working()
     shape, d = shape_of(design), design.section.depth - bar_depth(f)
-    bw, flange = shape.web, _flange(design, shape, top=bottom)
+    bw, flange = shape.web, compressed_flange(design, shape, effective_flange, top=bottom)
     w.step("d", "", d, "section length", "", note="to the centre of the bars")
     w.step("β1", "", stress_block_factor(fc), "", "Table 22.2.2.4.3")
     if flange:
@@ -396,10 +402,3 @@ def _least_depth(design: MemberDesign, f: Figures) -> Check:
         not_covered="Holds where no partitions or finishes are attached that deflections damage; "
         "otherwise deflections must be computed (24.2.3).",
     )  # fmt: skip
-
-
-def _flange(design: MemberDesign, shape: ConcreteShape, *, top: bool) -> tuple[float, float] | None:
-    wide, deep = shape.compressed_flange(top=top)
-    if wide <= shape.web:
-        return None
-    return effective_flange(shape, design.span or design.length), deep

@@ -11,7 +11,13 @@ import math
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from analysis_core.checks.concrete_parts import ConcreteShape, bar_depth, outside, shape_of
+from analysis_core.checks.concrete_parts import (
+    ConcreteShape,
+    bar_depth,
+    compressed_flange,
+    outside,
+    shape_of,
+)
 from analysis_core.checks.design import MemberDesign, strength_of
 from analysis_core.checks.working import Check, Figure, Figures, Working, not_checked
 from analysis_core.results import Extreme
@@ -150,7 +156,7 @@ def _bending(
         return None
     w, shape = Working(), shape_of(design)
     h = shape.depth
-    b, flange = shape.web, _flange(design, shape, top=bottom)
+    b, flange = shape.web, compressed_flange(design, shape, effective_flange, top=bottom)
     cover = bar_depth(f)
     d = w.step(
         "d", "{h} - {c_nom} - {d_link} - {d_bar}/2", h - cover, "section length", "",
@@ -291,14 +297,6 @@ def _redistribution(
     )  # fmt: skip
 
 
-def _flange(design: MemberDesign, shape: ConcreteShape, *, top: bool) -> tuple[float, float] | None:
-    """Effective width and depth of the flange where it is compressed; None where it is not."""
-    wide, deep = shape.compressed_flange(top=top)
-    if wide <= shape.web:
-        return None
-    return effective_flange(shape, design.span or design.length), deep
-
-
 def mean_tensile_strength(fck: float) -> float:
     """Return f_ctm in Pa up to C50/60 (Table 3.1): 0.30 f_ck^(2/3), MPa."""
     return float(0.30e6 * (fck / 1e6) ** (2.0 / 3.0))
@@ -403,7 +401,7 @@ def _span_to_depth(design: MemberDesign, f: Figures, fck: float) -> Check | None
     span = design.span or design.length
     d = design.section.depth - bar_depth(f)
     fcd, fyd = f["alpha_cc"] * fck / f["gamma_c"], f["f_yk"] / f["gamma_s"]
-    flange = _flange(design, shape, top=not design.cantilever)
+    flange = compressed_flange(design, shape, effective_flange, top=not design.cantilever)
     limit, _ = neutral_axis_limit(design, f, bottom=not design.cantilever)
     found = required_reinforcement(
         moment, b=shape.web, d=d, d2=bar_depth(f), fcd=fcd, fyd=fyd, limit=limit, e_s=f["E_s"],

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 import re
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from analysis_core.checks.design import NEGLIGIBLE, MemberDesign, plates, unlike_profile
@@ -70,6 +71,23 @@ def outside(design: MemberDesign, limit: float) -> str:
             f"up to which it counts as a beam; columns are not covered."
         )
     return ""
+
+
+def compressed_flange(
+    design: MemberDesign,
+    shape: ConcreteShape,
+    effective: Callable[[ConcreteShape, float], float],
+    *,
+    top: bool,
+) -> tuple[float, float] | None:
+    """Effective width and depth of the flange, m; None where it is not compressed.
+
+    ``effective`` gives the width that a code allows, by the shape and the length.
+    """
+    wide, deep = shape.compressed_flange(top=top)
+    if wide <= shape.web:
+        return None
+    return effective(shape, design.span or design.length), deep
 
 
 def bar_depth(f: Figures) -> float:
