@@ -16,7 +16,7 @@ import pytest
 ROOT = Path(__file__).parents[1]
 CORE = "analysis_core"
 
-PLAIN = frozenset({"errors", "findings", "units", "settings"})
+PLAIN = frozenset({"errors", "findings", "units", "settings", "collector"})
 DATA = PLAIN | {"model", "results", "building"}
 SOLVERS = frozenset({"distribution", "effects", "checks", "idealise", "stiffness_check"})
 HOST = frozenset(

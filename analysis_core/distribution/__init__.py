@@ -17,10 +17,9 @@ Conventions beside those of ``model``:
 
 from __future__ import annotations
 
-import gc
-from collections.abc import Iterator, Sequence
-from contextlib import contextmanager
+from collections.abc import Sequence
 
+from analysis_core.collector import collector_paused
 from analysis_core.distribution.assembly import solve_any
 from analysis_core.distribution.plain_lines import PlainLine, read
 from analysis_core.distribution.plain_results import solve_plain
@@ -44,25 +43,9 @@ def solve(line: Line, cases: Sequence[str]) -> LineSolution:
     return solve_any(line, cases) if plain is None else solve_plain([plain], cases)[0]
 
 
+@collector_paused()
 def solve_lines(lines: Sequence[Line], cases: Sequence[str]) -> list[LineSolution | AnalysisError]:
     """Solve many lines; a line that cannot be solved gives its error and stops no other."""
-    with _undisturbed():
-        return _solve_lines(lines, cases)
-
-
-@contextmanager
-def _undisturbed() -> Iterator[None]:
-    """Pause the garbage collector: many small objects are made here and none is garbage."""
-    enabled = gc.isenabled()
-    gc.disable()
-    try:
-        yield
-    finally:
-        if enabled:
-            gc.enable()
-
-
-def _solve_lines(lines: Sequence[Line], cases: Sequence[str]) -> list[LineSolution | AnalysisError]:
     solved: list[LineSolution | AnalysisError | None] = [None] * len(lines)
     column = {name: index for index, name in enumerate(cases)}
     alike: dict[tuple[bool, ...], list[tuple[int, PlainLine]]] = {}

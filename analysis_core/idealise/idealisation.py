@@ -2,9 +2,8 @@
 
 from __future__ import annotations
 
-import gc
-
 from analysis_core.building import AxisMember, Building, Carrier, Connection
+from analysis_core.collector import collector_paused
 from analysis_core.idealise import analytical, meetings
 from analysis_core.idealise.actions import put_axis_actions, put_node_actions
 from analysis_core.idealise.analytical import analytical_scheme
@@ -38,22 +37,13 @@ from analysis_core.model import Action, Line, LineModel, Transfer
 from analysis_core.settings import Settings
 
 
+@collector_paused()
 def idealise(building: Building, settings: Settings) -> LineModel:
     """Return the lines and frames of a building with their supports, actions and cases.
 
     Never raises for what a model may hold: a line that cannot be analysed carries the reason in
     ``fault``, and a finding of severity "error" names it.
     """
-    was_on = gc.isenabled()
-    gc.disable()  # a whole building makes many objects that live on, and no rubbish in circles
-    try:
-        return _idealised(building, settings)
-    finally:
-        if was_on:
-            gc.enable()
-
-
-def _idealised(building: Building, settings: Settings) -> LineModel:
     log = Log()
     chooser = Chooser()
     table = PropertyTable(settings, chooser)

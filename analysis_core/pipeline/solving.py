@@ -8,9 +8,9 @@ from dataclasses import replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
+from analysis_core.collector import collector_paused
 from analysis_core.distribution.record import DistributionRecord, distribute
 from analysis_core.errors import AnalysisError, JobError
-from analysis_core.ifc.collector import collector_paused
 from analysis_core.model import LineModel
 from analysis_core.pipeline.progress import Progress, silent
 from analysis_core.pipeline.reading import Survey, check_marks, survey

@@ -10,6 +10,7 @@ from collections.abc import Iterable, Mapping
 from typing import Any
 
 from analysis_core.building import Building
+from analysis_core.collector import collector_paused
 from analysis_core.findings import listed
 from analysis_core.ifc.analytical.actions import ActionReader
 from analysis_core.ifc.analytical.conditions import ConditionReader
@@ -22,7 +23,6 @@ from analysis_core.ifc.analytical.targets import Target, chained
 from analysis_core.ifc.analytical.ties import ties_of
 from analysis_core.ifc.analytical.topology import Topology
 from analysis_core.ifc.analytical.unassigned import report_unassigned
-from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.geometry.frames import Frame
 from analysis_core.ifc.geometry.paths import Measures
 from analysis_core.ifc.posting.ours import RESULT_TYPE

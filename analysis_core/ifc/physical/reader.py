@@ -9,8 +9,8 @@ from typing import Any
 import numpy as np
 
 from analysis_core.building import AxisMember, Building
+from analysis_core.collector import collector_paused
 from analysis_core.ifc.bodies.main_prism import CurvedMemberError
-from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.geometry.frames import point
 from analysis_core.ifc.physical.carriers import CarrierReader, check_place
 from analysis_core.ifc.physical.elements import Elements

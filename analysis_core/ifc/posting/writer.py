@@ -15,8 +15,8 @@ from datetime import UTC, datetime
 from pathlib import Path
 from typing import Literal
 
+from analysis_core.collector import collector_paused
 from analysis_core.errors import IfcWriteError
-from analysis_core.ifc.collector import collector_paused
 from analysis_core.ifc.posting import clearing
 from analysis_core.ifc.posting.posting import Posting, PostReport, Progress
 from analysis_core.ifc.posting.section_forces import CaseStations
